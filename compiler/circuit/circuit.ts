@@ -1,0 +1,85 @@
+import type { Source } from '../diagnostics/source.js';
+import type { Hierarchy } from './hierarchy.js';
+
+/** A port of the top module. `nets[0]` is its rightmost (least significant) bit. */
+export interface Port {
+  readonly name: string;
+  /** Declared left and right index; both 0 for a scalar. */
+  readonly msb: number;
+  readonly lsb: number;
+  readonly isVector: boolean;
+  readonly nets: Uint32Array;
+}
+
+/** Which edge of its clock pin a register captures on. */
+export const Edge = { Rising: 0, Falling: 1 } as const;
+
+/** What the output is while set and reset are both active. */
+export const Priority = { ResetWins: 0, SetWins: 1, Unknown: 2 } as const;
+
+/**
+ * Edge-triggered registers, one entry of each array per register.
+ *
+ * `set` and `reset` are asynchronous and active at 1 (readers insert an inverter for an active-low
+ * pin); `NO_NET` where absent. Enables, synchronous set and reset, scan and toggle are logic in
+ * front of `data`.
+ */
+export interface Registers {
+  readonly count: number;
+  readonly output: Uint32Array;
+  readonly clock: Uint32Array;
+  /** An `Edge`. */
+  readonly edge: Uint8Array;
+  readonly data: Uint32Array;
+  readonly set: Uint32Array;
+  readonly reset: Uint32Array;
+  /** A `Priority`. */
+  readonly priority: Uint8Array;
+  /** The value the netlist itself gives at power-up: 0, 1, or 2 where it gives none. */
+  readonly initial: Uint8Array;
+}
+
+/**
+ * Level-sensitive latches: transparent while `enable` is 1, otherwise they keep their value.
+ *
+ * `set`, `reset` and `priority` as in `Registers`. A latch of set and reset alone has `NO_NET` as
+ * enable and data.
+ */
+export interface Latches {
+  readonly count: number;
+  readonly output: Uint32Array;
+  readonly enable: Uint32Array;
+  readonly data: Uint32Array;
+  readonly set: Uint32Array;
+  readonly reset: Uint32Array;
+  readonly priority: Uint8Array;
+  readonly initial: Uint8Array;
+}
+
+/**
+ * A flat netlist: numbered nets with one driver each, in typed arrays.
+ *
+ * Made by `CircuitBuilder.finish()` only. The fan-in of net n is
+ * `fanin[faninStart[n]] … fanin[faninStart[n + 1] - 1]`.
+ */
+export interface Circuit {
+  /** Name of the top module. */
+  readonly name: string;
+  readonly netCount: number;
+  /** A `GateKind` per net. */
+  readonly kind: Uint8Array;
+  /** netCount + 1 entries. */
+  readonly faninStart: Uint32Array;
+  readonly fanin: Uint32Array;
+  /** In declaration order, clock ports included. */
+  readonly inputs: readonly Port[];
+  readonly outputs: readonly Port[];
+  readonly registers: Registers;
+  readonly latches: Latches;
+  readonly hierarchy: Hierarchy;
+  readonly sources: readonly Source[];
+  /** Per net: index into `sources` of the file of its driver. */
+  readonly originSource: Uint16Array;
+  /** Per net: byte offset of its driver's text in that file. */
+  readonly originOffset: Uint32Array;
+}

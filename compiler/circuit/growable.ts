@@ -1,0 +1,80 @@
+/** A list of unsigned 32-bit numbers that grows in place: four bytes an entry, no objects. */
+export class GrowableUint32 {
+  #data: Uint32Array;
+  #length = 0;
+
+  constructor(capacity = 64) {
+    this.#data = new Uint32Array(capacity);
+  }
+
+  get length(): number {
+    return this.#length;
+  }
+
+  push(value: number): void {
+    if (this.#length === this.#data.length) this.#grow(this.#length + 1);
+    this.#data[this.#length++] = value;
+  }
+
+  get(index: number): number {
+    return this.#data[index]!;
+  }
+
+  set(index: number, value: number): void {
+    this.#data[index] = value;
+  }
+
+  /** Appends `count` entries of one value. */
+  extend(count: number, value: number): void {
+    const end = this.#length + count;
+    if (end > this.#data.length) this.#grow(end);
+    this.#data.fill(value, this.#length, end);
+    this.#length = end;
+  }
+
+  /** The entries so far, as an array of just that length. */
+  take(): Uint32Array {
+    return this.#data.slice(0, this.#length);
+  }
+
+  #grow(needed: number): void {
+    const larger = new Uint32Array(Math.max(needed, this.#data.length * 2));
+    larger.set(this.#data);
+    this.#data = larger;
+  }
+}
+
+/** The byte-sized sister of `GrowableUint32`. */
+export class GrowableUint8 {
+  #data: Uint8Array;
+  #length = 0;
+
+  constructor(capacity = 64) {
+    this.#data = new Uint8Array(capacity);
+  }
+
+  get length(): number {
+    return this.#length;
+  }
+
+  push(value: number): void {
+    if (this.#length === this.#data.length) {
+      const larger = new Uint8Array(this.#data.length * 2);
+      larger.set(this.#data);
+      this.#data = larger;
+    }
+    this.#data[this.#length++] = value;
+  }
+
+  get(index: number): number {
+    return this.#data[index]!;
+  }
+
+  set(index: number, value: number): void {
+    this.#data[index] = value;
+  }
+
+  take(): Uint8Array {
+    return this.#data.slice(0, this.#length);
+  }
+}

@@ -1,0 +1,144 @@
+import { GrowableUint32 } from './growable.js';
+import type { NetId } from './ids.js';
+
+/** A named signal of a module: a scalar, or a vector with its declared range. */
+export interface Signal {
+  readonly name: string;
+  /** Declared left and right index; both 0 for a scalar. */
+  readonly msb: number;
+  readonly lsb: number;
+  readonly isVector: boolean;
+  /** Place of the signal's rightmost (least significant) bit in the module's list of bits. */
+  readonly offset: number;
+  readonly width: number;
+}
+
+/** The names that every instance of one module has. */
+export interface ModuleNames {
+  readonly name: string;
+  readonly signals: readonly Signal[];
+  /** Sum of the signals' widths. */
+  readonly bits: number;
+}
+
+/**
+ * The tree of instances and the net behind each bit of each named signal.
+ *
+ * Several names may stand for one net (a port and what is connected to it). Scope 0 is the top.
+ */
+export interface Hierarchy {
+  readonly modules: readonly ModuleNames[];
+  /** Instance name of each scope; that of scope 0 is the top module's name. */
+  readonly scopeNames: readonly string[];
+  /** Parent of each scope; 0 for scope 0. */
+  readonly scopeParent: Uint32Array;
+  /** Index into `modules` for each scope. */
+  readonly scopeModule: Uint32Array;
+  /** For each scope, where its bits start in `netOf`. */
+  readonly scopeStart: Uint32Array;
+  /** The net of bit `scopeStart[scope] + signal.offset + bit`. */
+  readonly netOf: Uint32Array;
+}
+
+/** Collects scopes in any order in which parents come before children. */
+export class HierarchyBuilder {
+  readonly #modules: ModuleNames[] = [];
+  readonly #names: string[] = [];
+  readonly #parent = new GrowableUint32();
+  readonly #module = new GrowableUint32();
+  readonly #start = new GrowableUint32();
+  readonly #netOf = new GrowableUint32();
+
+  /** Registers the names of a module; returns its index. */
+  addModule(names: ModuleNames): number {
+    return this.#modules.push(names) - 1;
+  }
+
+  /**
+   * Adds an instance of a module. `nets` has one net for each bit of the module's signals, in the
+   * order of `Signal.offset`. Returns the scope's index.
+   */
+  addScope(name: string, parent: number, module: number, nets: ArrayLike<number>): number {
+    const scope = this.#names.push(name) - 1;
+    this.#parent.push(parent);
+    this.#module.push(module);
+    this.#start.push(this.#netOf.length);
+    for (let i = 0; i < nets.length; i++) this.#netOf.push(nets[i]!);
+    return scope;
+  }
+
+  finish(): Hierarchy {
+    return {
+      modules: this.#modules,
+      scopeNames: this.#names,
+      scopeParent: this.#parent.take(),
+      scopeModule: this.#module.take(),
+      scopeStart: this.#start.take(),
+      netOf: this.#netOf.take(),
+    };
+  }
+}
+
+/** The dotted path of a scope below the top, as IEEE 1364 writes it; empty for the top itself. */
+export function scopePath(hierarchy: Hierarchy, scope: number): string {
+  const parts: string[] = [];
+  for (let s = scope; s !== 0; s = hierarchy.scopeParent[s]!) parts.push(hierarchy.scopeNames[s]!);
+  return parts.reverse().join('.');
+}
+
+/** The declared index of a bit counted from the right: `[7:4]` has bit 0 at index 4. */
+export function declaredIndex(signal: Signal, bit: number): number {
+  return signal.lsb <= signal.msb ? signal.lsb + bit : signal.lsb - bit;
+}
+
+/** `a.b.q` or `a.b.q[3]` for a bit of a signal. */
+export function bitName(hierarchy: Hierarchy, scope: number, signal: Signal, bit: number): string {
+  const path = scopePath(hierarchy, scope);
+  const base = path === '' ? signal.name : `${path}.${signal.name}`;
+  return signal.isVector ? `${base}[${declaredIndex(signal, bit)}]` : base;
+}
+
+/**
+ * For every net the name nearest to the top: an index into `netOf`, or -1 for a net without name.
+ *
+ * Takes one pass over all names; use `nameAt` to write one out.
+ */
+export function primaryNames(hierarchy: Hierarchy, netCount: number): Int32Array {
+  const name = new Int32Array(netCount).fill(-1);
+  // Scopes are in parent-first order, so the first name met is one of least depth among its
+  // ancestors; that is the name a user knows the net by.
+  for (let i = hierarchy.netOf.length - 1; i >= 0; i--) name[hierarchy.netOf[i]!] = i;
+  return name;
+}
+
+/** The full name of the bit at an index into `netOf`. */
+export function nameAt(hierarchy: Hierarchy, index: number): string {
+  let low = 0;
+  let high = hierarchy.scopeStart.length - 1;
+  while (low < high) {
+    const middle = (low + high + 1) >> 1;
+    if (hierarchy.scopeStart[middle]! <= index) low = middle;
+    else high = middle - 1;
+  }
+  const module = hierarchy.modules[hierarchy.scopeModule[low]!]!;
+  const bit = index - hierarchy.scopeStart[low]!;
+  const signal = signalAt(module, bit);
+  return bitName(hierarchy, low, signal, bit - signal.offset);
+}
+
+function signalAt(module: ModuleNames, bit: number): Signal {
+  let low = 0;
+  let high = module.signals.length - 1;
+  while (low < high) {
+    const middle = (low + high + 1) >> 1;
+    if (module.signals[middle]!.offset <= bit) low = middle;
+    else high = middle - 1;
+  }
+  return module.signals[low]!;
+}
+
+/** The name of a net, or `net 17` where it has none. */
+export function netName(hierarchy: Hierarchy, names: Int32Array, net: NetId | number): string {
+  const index = names[net] ?? -1;
+  return index < 0 ? `net ${net}` : nameAt(hierarchy, index);
+}

@@ -1,0 +1,100 @@
+import type { Circuit } from './circuit.js';
+import { GateKind, isGate } from './gates.js';
+import { NO_NET } from './ids.js';
+import { TarjanSearch } from './tarjan.js';
+
+/**
+ * The combinational loops of a circuit: sets of nets that depend on one another without a clock
+ * edge between. Latches count as transparent, and the asynchronous set and reset of a register
+ * reach its output.
+ *
+ * A loop settles in rounds: its nets are evaluated one after another in net order, round after
+ * round until a round changes nothing, starting from the values that they had before. Of these,
+ * only the `kept` nets are read before they are evaluated, so they are what the loop remembers.
+ */
+export interface Loops {
+  /** All kept nets, loop by loop: state beside that of registers and latches. */
+  readonly keptNets: Uint32Array;
+  /** Per net: the loop that it belongs to, or -1. */
+  readonly loopOf: Int32Array;
+  /** The nets of each loop, in net order. */
+  readonly nets: readonly Uint32Array[];
+  /** Of each loop, the gates that one of its nets reads before they are evaluated. */
+  readonly kept: readonly Uint32Array[];
+}
+
+/** Rounds in which a loop of so many nets must settle; one that does not is said to oscillate. */
+export const roundLimit = (netCount: number): number => 4 + 2 * netCount;
+
+const known = new WeakMap<Circuit, Loops>();
+
+/** The loops of a circuit; found once for each circuit. */
+export function loopsOf(circuit: Circuit): Loops {
+  const loops = known.get(circuit) ?? findLoops(circuit);
+  known.set(circuit, loops);
+  return loops;
+}
+
+// Strongly connected components of the settling logic.
+function findLoops(circuit: Circuit): Loops {
+  const sources = new SettlingSources(circuit);
+  const nets = new TarjanSearch(circuit.netCount, (net, i) => sources.at(net, i))
+    .components()
+    .map((component) => Uint32Array.from(component).sort());
+  const loopOf = new Int32Array(circuit.netCount).fill(-1);
+  nets.forEach((members, loop) => {
+    for (const net of members) loopOf[net] = loop;
+  });
+  const kept = nets.map((members) => keptNets(circuit, sources, loopOf, members));
+  return { keptNets: Uint32Array.from(kept.flatMap((each) => [...each])), loopOf, nets, kept };
+}
+
+function keptNets(
+  circuit: Circuit,
+  sources: SettlingSources,
+  loopOf: Int32Array,
+  members: Uint32Array,
+): Uint32Array {
+  const kept = new Set<number>();
+  for (const net of members) {
+    for (let i = 0, source = sources.at(net, 0); source !== -1; source = sources.at(net, ++i)) {
+      const isInside = loopOf[source] === loopOf[net];
+      if (isInside && source >= net && isGate(circuit.kind[source]!)) kept.add(source);
+    }
+  }
+  return Uint32Array.from(kept).sort();
+}
+
+/** What a net depends on within one settling, one net after another. */
+export class SettlingSources {
+  readonly #circuit: Circuit;
+  readonly #pins = new Map<number, number[]>();
+
+  constructor(circuit: Circuit) {
+    this.#circuit = circuit;
+    const { registers, latches } = circuit;
+    for (let r = 0; r < registers.count; r++) {
+      this.#addPins(registers.output[r]!, [registers.set[r]!, registers.reset[r]!]);
+    }
+    const { enable, data, set, reset } = latches;
+    for (let l = 0; l < latches.count; l++) {
+      this.#addPins(latches.output[l]!, [enable[l]!, data[l]!, set[l]!, reset[l]!]);
+    }
+  }
+
+  /** The i-th net that a net depends on, or -1 past the last. */
+  at(net: number, i: number): number {
+    const { kind, faninStart, fanin } = this.#circuit;
+    if (isGate(kind[net]!)) {
+      const at = faninStart[net]! + i;
+      return at < faninStart[net + 1]! ? fanin[at]! : -1;
+    }
+    if (kind[net] !== GateKind.Register && kind[net] !== GateKind.Latch) return -1;
+    return this.#pins.get(net)?.[i] ?? -1;
+  }
+
+  #addPins(output: number, candidates: readonly number[]): void {
+    const wired = candidates.filter((net) => net !== NO_NET);
+    if (wired.length > 0) this.#pins.set(output, wired);
+  }
+}

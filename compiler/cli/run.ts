@@ -1,0 +1,131 @@
+import { Command, InvalidArgumentError, Option } from 'commander';
+import { readStimulus } from '../../runtime/node/index.js';
+import { heldStimulus, randomStimulus, type StimulusBlock } from '../../runtime/stream.js';
+import { type PowerUp, powerUpModes } from '../circuit/powerUp.js';
+import { startingRegisters } from '../circuit/startingRegisters.js';
+import type { Design } from '../compile.js';
+import { loadBinaryen } from '../emit/emitModel.js';
+import { type EngineName, engineNames } from '../engines.js';
+import { runDesign } from '../run/runDesign.js';
+import { summaryText } from '../run/runSummary.js';
+import { addNetlistOptions, loadDesign, type NetlistOptions } from './netlists.js';
+import { UsageError } from './usageError.js';
+
+interface RunOptions extends NetlistOptions {
+  readonly stimulus?: string;
+  readonly random?: bigint;
+  readonly cycles?: number;
+  readonly response?: string;
+  readonly expect?: string;
+  readonly all?: true;
+  readonly signature?: true;
+  readonly powerUp?: PowerUp;
+  readonly seed: bigint;
+  readonly engine: EngineName;
+  readonly json?: true;
+}
+
+/** The verb `run`: runs cycles of a netlist. */
+export function runCommand(): Command {
+  return addNetlistOptions(new Command('run'))
+    .description('Runs cycles of a netlist and writes, compares or signs the response.')
+    .addOption(
+      new Option('--stimulus <file>', 'input values, a CSV row a cycle').conflicts('random'),
+    )
+    .option('--random <seed>', 'fresh random bits for all inputs in every cycle', seed)
+    .option('--cycles <n>', 'how long; as long as the stimulus unless given', cycleCount)
+    .option('--response <file>', 'write the outputs of every cycle as CSV')
+    .option('--expect <file>', 'compare the outputs with this CSV; end at the first departure')
+    .option('--all', 'with --expect: go on and list all departures')
+    .option('--signature', 'print the CRC-64 of the response')
+    .addOption(
+      new Option(
+        '--power-up <how>',
+        'how registers start that the netlist gives no value (default: zero)',
+      ).choices(powerUpModes),
+    )
+    .option('--seed <seed>', 'seed of random power-up', seed, 0n)
+    .addOption(new Option('--engine <name>', 'what runs it').choices(engineNames).default('wasm'))
+    .option('--json', 'print the summary as JSON')
+    .addHelpText('after', HELP)
+    .action(run);
+}
+
+const HELP = `
+A stimulus table names input ports in its header; an empty field holds the value
+before, a column @cycles tells how long a row lasts. The clock ticks by itself and has
+no column. An expectation table has any of the columns of a response.
+
+Exit status: 0 done and as expected, 1 done and a departure found or interrupted,
+2 an input or the request is wrong, or a cycle has no result.
+
+Example:
+  clockstride run lock.v --stimulus boats.csv --cycles 2000000 --expect lights.csv`;
+
+async function run(files: string[], options: RunOptions): Promise<void> {
+  const powerUp = options.powerUp ?? 'zero';
+  // Binaryen takes a while to load: it comes while the netlist is read.
+  const wasm = options.engine === 'wasm' ? loadBinaryen() : undefined;
+  const design = await loadDesign(files, options, { threeValued: powerUp === 'unknown' });
+  if (options.powerUp === undefined) warnOfStart(design);
+  const { stimulus, notes } = stimulusOf(design, options);
+  const interrupt = new AbortController();
+  process.once('SIGINT', () => interrupt.abort());
+  const summary = await runDesign(design, {
+    ...options,
+    powerUp,
+    stimulus,
+    notes,
+    interrupt: interrupt.signal,
+    onDeparture: (text) => process.stdout.write(options.json ? '' : `${text}\n`),
+    ...(wasm && { wasm }),
+  });
+  const text = options.json
+    ? JSON.stringify(summary, null, 2)
+    : summaryText(summary, options.expect);
+  process.stdout.write(`${text}\n`);
+  if (summary.mismatch ?? summary.stopped) process.exitCode = 1;
+}
+
+function warnOfStart({ circuit }: Design): void {
+  const { withoutStart } = startingRegisters(circuit);
+  if (withoutStart === 0) return;
+  process.stderr.write(
+    `warning: ${withoutStart} of ${circuit.registers.count} registers have neither an initial ` +
+      `value nor a set or reset; they start at 0. Choose with --power-up. [register-no-start]\n`,
+  );
+}
+
+function stimulusOf(
+  { layout }: Design,
+  options: RunOptions,
+): { stimulus: AsyncIterable<StimulusBlock> | Iterable<StimulusBlock>; notes: string[] } {
+  if (options.stimulus !== undefined) {
+    return { stimulus: readStimulus(options.stimulus, layout), notes: [] };
+  }
+  const { cycles } = options;
+  if (cycles === undefined) {
+    throw new UsageError('error: without a stimulus, say how long to run with --cycles N');
+  }
+  if (options.random !== undefined) {
+    return { stimulus: randomStimulus(layout, options.random, cycles), notes: [] };
+  }
+  const held = 'all inputs are held at 0; use --stimulus or --random to drive them';
+  return {
+    stimulus: heldStimulus(layout, cycles),
+    notes: layout.inputs.bits > 0 ? [held] : [],
+  };
+}
+
+function cycleCount(text: string): number {
+  const value = Number(text.replaceAll('_', ''));
+  if (!Number.isSafeInteger(value) || value < 0 || text === '') {
+    throw new InvalidArgumentError('Give a whole number from 0 on.');
+  }
+  return value;
+}
+
+function seed(text: string): bigint {
+  if (!/^(\d+|0x[0-9a-f]+)$/i.test(text)) throw new InvalidArgumentError('Give a whole number.');
+  return BigInt(text);
+}

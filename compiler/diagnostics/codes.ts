@@ -1,0 +1,117 @@
+/** How bad a diagnostic is: an error stops the run, a warning and a note do not. */
+export type Severity = 'error' | 'warning' | 'note';
+
+interface CodeInfo {
+  readonly severity: Severity;
+  /** What leads to it. */
+  readonly cause: string;
+  /** What the user can do about it. */
+  readonly cure: string;
+}
+
+const error = (cause: string, cure: string): CodeInfo => ({ severity: 'error', cause, cure });
+const warning = (cause: string, cure: string): CodeInfo => ({ severity: 'warning', cause, cure });
+const note = (cause: string, cure: string): CodeInfo => ({ severity: 'note', cause, cure });
+
+/** Every diagnostic code, with its severity, cause and cure. Codes are stable. */
+export const codeTable = {
+  // Files and the command line
+  'file-unreadable': error('A named file cannot be opened.', 'Check the path and its rights.'),
+  'file-kind-unknown': error(
+    'The ending of a netlist file says nothing about its form.',
+    'Use .v for Verilog, .bench for the ISCAS text form, .lib for Liberty.',
+  ),
+  'option-invalid': error('An option or its value makes no sense.', 'See `--help` of the verb.'),
+
+  // Common to all readers
+  'syntax-error': error('The text does not follow the grammar.', 'Mend it at the place named.'),
+  'not-supported': error(
+    'The construct is legal but outside what a zero-delay cycle model can run.',
+    'Rewrite it as the message proposes.',
+  ),
+
+  // Names and structure
+  'name-undeclared': error(
+    'A name is used that is never declared.',
+    'Declare it or mend its spelling.',
+  ),
+  'name-redeclared': error('A name is declared twice.', 'Remove or rename one declaration.'),
+  'module-unknown': error(
+    'An instance names a module that no file defines.',
+    'Add the file, such as a cell library, that defines it.',
+  ),
+  'module-redefined': error('Two modules have one name.', 'Leave out one of the files.'),
+  'module-recursive': error('A module contains itself.', 'Break the recursion.'),
+  'top-ambiguous': error('Several modules are instantiated by none.', 'Choose one with --top.'),
+  'top-unknown': error('No module has the name given to --top.', 'Name one of those listed.'),
+  'port-unknown': error('A connection names a port that the module lacks.', 'Mend the name.'),
+  'port-count': error('More positional connections than ports.', 'Remove the surplus.'),
+  'width-mismatch': warning(
+    'The widths of a port and its connection differ.',
+    'Make them equal; until then the value is cut or padded with zeros.',
+  ),
+  'range-invalid': error('A range or select is outside the declaration.', 'Mend the numbers.'),
+  'gate-arity': error('A gate has too few or too many connections.', 'Mend the connection list.'),
+  'net-undriven': warning(
+    'A net that is read has no driver; it reads as x, and as 0 in two-valued runs.',
+    'Drive it or tie it to a constant.',
+  ),
+  'net-multiply-driven': error('A net has several drivers.', 'Leave one of them.'),
+  'combinational-loop': warning(
+    'Gates feed back to themselves without a register between.',
+    'Nothing, where it is a latch made of gates; else break the loop with a register.',
+  ),
+  'register-no-start': warning(
+    'Registers have neither an initial value nor a set or reset.',
+    'Give them one, or choose --power-up.',
+  ),
+  'input-held': note(
+    'Data inputs have no stimulus; they are held at 0.',
+    'Use --stimulus or --random.',
+  ),
+  'clock-missing': error('No input port clocks the registers.', 'Bring the clock to a port.'),
+
+  // Verilog behaviour
+  'constant-required': error(
+    'A number that is needed while reading depends on signals.',
+    'Use literals, parameters and constant functions there.',
+  ),
+  'target-invalid': error(
+    'An assignment goes to what cannot be assigned at its place.',
+    'Procedures assign variables (reg, integer, time), `assign` and instances drive nets.',
+  ),
+  'argument-count': error(
+    'A function or task is called with too few or too many arguments.',
+    'Give one for each declared argument.',
+  ),
+  'loop-unbounded': error(
+    'A loop runs longer than can be unrolled, or its end depends on signals.',
+    'Give the loop constant bounds.',
+  ),
+  'latch-inferred': warning(
+    'Combinational code leaves a variable unassigned on some path, so it holds its value.',
+    'Assign a default first, or complete the branches.',
+  ),
+  'sensitivity-incomplete': warning(
+    'A level-sensitive event list leaves out signals that are read; it is taken as complete.',
+    'Write @*.',
+  ),
+  'select-outside': warning(
+    'A constant select lies outside the declaration; it reads as x and writes nothing.',
+    'Mend the numbers.',
+  ),
+  'task-ignored': note(
+    'A system task that prints or steers a simulation has no meaning in a circuit.',
+    'Nothing needs to be done.',
+  ),
+
+  // Stimulus and expectation
+  'stimulus-invalid': error('A stimulus table cannot be used.', 'Mend it at the place named.'),
+  'expectation-invalid': error(
+    'An expectation table cannot be used.',
+    'Mend it at the place named.',
+  ),
+} as const satisfies Record<string, CodeInfo>;
+
+/** The name of a diagnostic, as printed in brackets. */
+export type DiagnosticCode = keyof typeof codeTable;

@@ -1,0 +1,134 @@
+import type binaryen from 'binaryen';
+import type { ModelLayout } from '../../runtime/layout.js';
+import type { WasmModel } from '../../runtime/wasmModel.js';
+import type { Program } from '../program/program.js';
+import { type AreaLayout, layArea } from './areaLayout.js';
+import { BlockEmitter, type Emission, type Pointers } from './blockEmitter.js';
+import {
+  outputGroups,
+  outputsInMemory,
+  packFromMemory,
+  packFromValues,
+  SCALAR_OUTPUTS,
+} from './packOutputs.js';
+import { RunLocal, runLoop, runPointers } from './runLoop.js';
+import { storesOf } from './sinks.js';
+import { emitUpdates } from './updates.js';
+
+/** Address of the first area; what lies below stays zero. */
+const FIRST_AREA = 1024;
+
+/** Copies in one function, where values pass from inputs or states straight to states or outputs. */
+const COPIES_IN_BLOCK = 1000;
+
+/** Updates in one function, a handful of instructions each. */
+const UPDATES_IN_BLOCK = 300;
+
+/** Loads Binaryen, which takes most of a second: call it early, wait for it late. */
+export const loadBinaryen = async (): Promise<typeof binaryen> =>
+  (await import('binaryen')).default;
+
+/** Emits a program as a WebAssembly module; `wasm` is the loaded Binaryen library. */
+export function emitModel(wasm: typeof binaryen, program: Program, layout: ModelLayout): WasmModel {
+  const module = new wasm.Module();
+  try {
+    module.setFeatures(wasm.Features.SIMD128 | wasm.Features.MutableGlobals);
+    const area = layArea(program);
+    const areas = [FIRST_AREA, FIRST_AREA + area.size] as const;
+    const buffers = FIRST_AREA + 2 * area.size;
+    module.setMemory(Math.ceil(buffers / 65536), 65536, 'memory', [], false, false, '0');
+    addGlobals(module, wasm.i32, areas[0]);
+    addRun(wasm, module, program, area, areas[0] + areas[1]);
+    return {
+      bytes: Uint8Array.from(module.emitBinary()),
+      layout,
+      memory: { areas, buffers },
+      states: program.states,
+      stateInverted: program.stateInverted,
+      faults: program.faults.map((fault) => fault.message),
+    };
+  } finally {
+    module.dispose();
+  }
+}
+
+function addGlobals(module: binaryen.Module, i32: binaryen.Type, firstArea: number): void {
+  module.addGlobal('current', i32, true, module.i32.const(firstArea));
+  module.addGlobal('fault', i32, true, module.i32.const(0));
+  module.addGlobalExport('current', 'current');
+  module.addGlobalExport('fault', 'fault');
+}
+
+function addRun(
+  wasm: typeof binaryen,
+  module: binaryen.Module,
+  program: Program,
+  area: AreaLayout,
+  areaSum: number,
+): void {
+  const { i32 } = wasm;
+  const isSmall = program.blockStart.length === 2 && program.stateCount < COPIES_IN_BLOCK;
+  const groups = outputGroups(program);
+  const packsValues = isSmall && program.outputs.length <= SCALAR_OUTPUTS;
+  const sinks = storesOf(program, area, packsValues ? [] : outputsInMemory(groups));
+  const emission: Emission = { module, i32, program, area, sinks };
+  const cycle = isSmall
+    ? inlineCycle(emission, packsValues)
+    : callCycle(emission, wasm.createType([i32, i32, i32]), wasm.none);
+  if (!packsValues) {
+    cycle.statements.push(...packFromMemory(emission, groups, runPointers, RunLocal.Response));
+  }
+  const parameters = wasm.createType(new Array(RunLocal.Current).fill(i32));
+  const locals = new Array<binaryen.Type>(cycle.localCount - RunLocal.Current).fill(i32);
+  module.addFunction('run', parameters, i32, locals, runLoop(emission, areaSum, cycle.statements));
+  module.addFunctionExport('run', 'run');
+}
+
+interface CycleCode {
+  readonly statements: binaryen.ExpressionRef[];
+  /** Locals in use, those of `run` included. */
+  readonly localCount: number;
+}
+
+// A small circuit's whole cycle stands in the loop and costs no call.
+function inlineCycle(emission: Emission, packsValues: boolean): CycleCode {
+  const { program, sinks } = emission;
+  const block = new BlockEmitter(emission, 0, runPointers, RunLocal.Free);
+  block.emit(packsValues ? program.outputs : []);
+  for (const [value, offset] of sinks.copies) block.copy(value, offset);
+  const packed = packsValues ? packFromValues(emission, block, RunLocal.Response) : [];
+  const updates = emitUpdates(emission, runPointers);
+  return { statements: [...block.statements, ...packed, ...updates], localCount: block.localCount };
+}
+
+const PARAMETERS: Pointers = { current: 0, next: 1, row: 2 };
+
+function callCycle(emission: Emission, parameters: binaryen.Type, none: binaryen.Type): CycleCode {
+  const { module, program, sinks, i32 } = emission;
+  const statements: binaryen.ExpressionRef[] = [];
+  const add = (name: string, body: binaryen.ExpressionRef[], localCount: number): void => {
+    const locals = new Array<binaryen.Type>(localCount - 3).fill(i32);
+    module.addFunction(name, parameters, none, locals, module.block(null, body));
+    const { Current, Next, Row } = RunLocal;
+    const pointers = [Current, Next, Row].map((local) => module.local.get(local, i32));
+    statements.push(module.call(name, pointers, none));
+  };
+  for (let b = 0; b + 1 < program.blockStart.length; b++) {
+    const block = new BlockEmitter(emission, b, PARAMETERS, 3);
+    block.emit();
+    add(`block${b}`, block.statements, block.localCount);
+  }
+  for (let from = 0; from < sinks.copies.length; from += COPIES_IN_BLOCK) {
+    // Beyond the last operation, a block has none of its own and only copies.
+    const block = new BlockEmitter(emission, program.blockStart.length - 1, PARAMETERS, 3);
+    for (const [value, offset] of sinks.copies.slice(from, from + COPIES_IN_BLOCK)) {
+      block.copy(value, offset);
+    }
+    add(`copies${from}`, block.statements, block.localCount);
+  }
+  const updates = emitUpdates(emission, PARAMETERS);
+  for (let from = 0; from < updates.length; from += UPDATES_IN_BLOCK) {
+    add(`updates${from}`, updates.slice(from, from + UPDATES_IN_BLOCK), 3);
+  }
+  return { statements, localCount: RunLocal.Free };
+}

@@ -1,0 +1,95 @@
+import type { Circuit } from '../../circuit/circuit.js';
+import { GateKind } from '../../circuit/gates.js';
+import { NO_NET } from '../../circuit/ids.js';
+import { AND, choose, NOT, OR, type ValueTable, withSetReset, XOR } from './values.js';
+
+/** Computes single nets of a circuit from the values of all nets. */
+export class Evaluator {
+  readonly #circuit: Circuit;
+  readonly #elementOf: Uint32Array;
+  readonly #value: Uint8Array;
+  readonly #unknown: number;
+
+  /** Reads `value` at each call. `unknown` is what a constant x reads as: 2, or 0 if two-valued. */
+  constructor(circuit: Circuit, elementOf: Uint32Array, value: Uint8Array, unknown: number) {
+    this.#circuit = circuit;
+    this.#elementOf = elementOf;
+    this.#value = value;
+    this.#unknown = unknown;
+  }
+
+  /** What a net's driver makes of the present values. An input and what is held stay. */
+  evaluate(net: number): number {
+    switch (this.#circuit.kind[net]) {
+      case GateKind.Zero:
+        return 0;
+      case GateKind.One:
+        return 1;
+      case GateKind.Unknown:
+        return this.#unknown;
+      case GateKind.Register:
+        return this.register(this.#elementOf[net]!, this.#value[net]!);
+      case GateKind.Latch:
+        return this.#latch(this.#elementOf[net]!, this.#value[net]!);
+      case GateKind.Buf:
+      case GateKind.And:
+        return this.#fold(net, AND);
+      case GateKind.Not:
+      case GateKind.Nand:
+        return NOT[this.#fold(net, AND)]!;
+      case GateKind.Or:
+        return this.#fold(net, OR);
+      case GateKind.Nor:
+        return NOT[this.#fold(net, OR)]!;
+      case GateKind.Xor:
+        return this.#fold(net, XOR);
+      case GateKind.Xnor:
+        return NOT[this.#fold(net, XOR)]!;
+      case GateKind.Mux:
+        return this.#mux(net);
+      default:
+        return this.#value[net]!;
+    }
+  }
+
+  /** What a register shows that would hold `held` if set and reset were inactive. */
+  register(index: number, held: number): number {
+    const { set, reset, priority } = this.#circuit.registers;
+    const setValue = this.#pin(set[index]!);
+    return withSetReset(held, setValue, this.#pin(reset[index]!), priority[index]!, this.#unknown);
+  }
+
+  #latch(index: number, held: number): number {
+    const { enable, data, set, reset, priority } = this.#circuit.latches;
+    const passed = choose(this.#pin(enable[index]!), held, this.#pin(data[index]!));
+    const setValue = this.#pin(set[index]!);
+    return withSetReset(
+      passed,
+      setValue,
+      this.#pin(reset[index]!),
+      priority[index]!,
+      this.#unknown,
+    );
+  }
+
+  #pin(net: number): number {
+    return net === NO_NET ? 0 : this.#value[net]!;
+  }
+
+  #fold(net: number, table: ValueTable): number {
+    const { faninStart, fanin } = this.#circuit;
+    const end = faninStart[net + 1]!;
+    let result = this.#value[fanin[faninStart[net]!]!]!;
+    for (let i = faninStart[net]! + 1; i < end; i++) {
+      result = table[result * 3 + this.#value[fanin[i]!]!]!;
+    }
+    return result;
+  }
+
+  #mux(net: number): number {
+    const { faninStart, fanin } = this.#circuit;
+    const first = faninStart[net]!;
+    const value = this.#value;
+    return choose(value[fanin[first]!]!, value[fanin[first + 1]!]!, value[fanin[first + 2]!]!);
+  }
+}

@@ -1,0 +1,137 @@
+import { type Circuit, Priority } from '../circuit/circuit.js';
+import { GateKind, gateInfo } from '../circuit/gates.js';
+import { netName, primaryNames } from '../circuit/hierarchy.js';
+import { NO_NET } from '../circuit/ids.js';
+import { inputRowNets, outputRowNets } from '../circuit/modelLayout.js';
+import type { Design } from '../compile.js';
+import { mainText } from './mainText.js';
+import { obstacleToOneStep } from './oneStep.js';
+import { settlingOrder } from './settlingOrder.js';
+
+/** A C program that runs a design, or the reason why there is none. */
+export type EmittedC = { readonly text: string } | { readonly obstacle: string };
+
+/**
+ * Writes a design as straight-line C: a yardstick for generated code.
+ *
+ * It is the circuit as read, through no pass of the compiler: one `unsigned` for each net that
+ * outputs or registers depend on, of which bit 0 counts. `state` is the power-up state in the order
+ * of `ModelLayout.stateNames`, 0 or 1 each. See `mainText` for how to call the program. There is
+ * none for a design whose cycle is more than one settling and one commit.
+ */
+export function emitC(design: Design, state: Uint8Array): EmittedC {
+  const obstacle = obstacleToOneStep(design);
+  if (obstacle !== undefined) return { obstacle };
+  const { circuit, layout } = design;
+  const { registers } = circuit;
+  const order = settlingOrder(circuit, [
+    ...registers.set.filter((net) => net !== NO_NET),
+    ...registers.reset.filter((net) => net !== NO_NET),
+    ...outputRowNets(circuit),
+    ...registers.data,
+  ]);
+  if (order === undefined) return { obstacle: 'the logic has a loop' };
+  const lines = [
+    ...(registers.count > 0 ? [stateDeclaration(state)] : []),
+    'static void step(const unsigned *in, unsigned *out)',
+    '{',
+    '  (void)in;',
+    '  (void)out;',
+    ...new StepWriter(design).lines(order),
+    '}',
+  ];
+  return { text: `${lines.join('\n')}\n${mainText(layout.inputs.words, layout.outputs.words)}` };
+}
+
+function stateDeclaration(state: Uint8Array): string {
+  const ones = Array.from(state.keys()).filter((index) => state[index] === 1);
+  const initial = ones.map((index) => `[${index}] = 1u`).join(', ') || '0u';
+  return `static unsigned state[${state.length}] = {${initial}};`;
+}
+
+/** Writes the body of the function that runs one cycle. */
+class StepWriter {
+  readonly #circuit: Circuit;
+  readonly #names: Int32Array;
+  /** What a source net is read from, where it has a place of its own. */
+  readonly #source: readonly (string | undefined)[];
+
+  constructor(design: Design) {
+    this.#circuit = design.circuit;
+    this.#names = primaryNames(design.circuit.hierarchy, design.circuit.netCount);
+    this.#source = sourceExpressions(design);
+  }
+
+  lines(order: Uint32Array): string[] {
+    const { registers } = this.#circuit;
+    const lines = Array.from(
+      order,
+      (net) => `  const unsigned n${net} = ${this.#value(net)}; /* ${this.#name(net)} */`,
+    );
+    // Below the last read of the state, so that all registers change together.
+    registers.data.forEach((net, i) => {
+      lines.push(`  state[${i}] = ${controlled(this.#circuit, i, `n${net}`)};`);
+    });
+    return [...lines, ...packedOutputs(outputRowNets(this.#circuit))];
+  }
+
+  #value(net: number): string {
+    const { kind, faninStart, fanin } = this.#circuit;
+    const pins = Array.from(
+      fanin.subarray(faninStart[net]!, faninStart[net + 1]!),
+      (pin) => `n${pin}`,
+    );
+    if (kind[net] === GateKind.Mux) {
+      // Compilers make of `?:` code that takes twice as long.
+      const [select, zero, one] = pins;
+      return `${zero} ^ (${select} & (${zero} ^ ${one}))`;
+    }
+    const { fold } = gateInfo(kind[net]!);
+    if (fold === undefined) return this.#source[net] ?? (kind[net] === GateKind.One ? '~0u' : '0u');
+    const folded = pins.join(` ${operators[fold.operation]} `);
+    return fold.inverted ? `~(${folded})` : folded;
+  }
+
+  // Nothing in a name may end the comment or open another.
+  #name(net: number): string {
+    return netName(this.#circuit.hierarchy, this.#names, net).replace(/[^\w.[\]$ -]/g, '_');
+  }
+}
+
+const operators = { and: '&', or: '|', xor: '^' } as const;
+
+function sourceExpressions({ circuit, clocks }: Design): (string | undefined)[] {
+  const expressions: (string | undefined)[] = new Array(circuit.netCount);
+  inputRowNets(circuit, clocks).forEach((net, bit) => {
+    if (net !== NO_NET) expressions[net] = `in[${bit >>> 5}] >> ${bit & 31}`;
+  });
+  // Outputs and data are taken while the clock is inactive, so it is a constant to them.
+  for (const { net, inactive } of clocks.ports) expressions[net] = inactive === 1 ? '~0u' : '0u';
+  circuit.registers.output.forEach((net, i) => {
+    expressions[net] = controlled(circuit, i, `state[${i}]`);
+  });
+  return expressions;
+}
+
+/** A register's value under its asynchronous set and reset; the one that wins comes last. */
+function controlled({ registers }: Circuit, register: number, held: string): string {
+  const set = registers.set[register]!;
+  const reset = registers.reset[register]!;
+  const withSet = (value: string) => (set === NO_NET ? value : `(${value} | n${set})`);
+  const withReset = (value: string) => (reset === NO_NET ? value : `(${value} & ~n${reset})`);
+  // Where neither wins, both active read as x, which is 0 here.
+  return registers.priority[register] === Priority.SetWins
+    ? withSet(withReset(held))
+    : withReset(withSet(held));
+}
+
+function packedOutputs(nets: Uint32Array): string[] {
+  const lines: string[] = [];
+  for (let first = 0; first < nets.length; first += 32) {
+    const bits = Array.from(nets.subarray(first, first + 32), (net, bit) =>
+      bit === 0 ? `(n${net} & 1u)` : `(n${net} & 1u) << ${bit}`,
+    );
+    lines.push(`  out[${first >>> 5}] = ${bits.join(' | ')};`);
+  }
+  return lines;
+}

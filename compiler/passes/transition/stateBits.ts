@@ -1,0 +1,56 @@
+import { type Literal, type LogicState, TRUE } from '../../logic/logic.js';
+import type { LogicBuilder } from '../../logic/logicBuilder.js';
+import { mayBeOne, mayBeZero, type NetValue, pair } from './algebra.js';
+
+/** The state bits of a transition: made on demand, given their next value at the end. */
+export class StateBits {
+  readonly list: LogicState[] = [];
+  readonly next: Literal[] = [];
+  readonly #logic: LogicBuilder;
+  readonly #threeValued: boolean;
+  readonly #inputs = new Map<number, NetValue>();
+  #started: Literal | undefined;
+
+  constructor(logic: LogicBuilder, threeValued: boolean) {
+    this.#logic = logic;
+    this.#threeValued = threeValued;
+  }
+
+  /** What a state element of the circuit holds at the start of the cycle. */
+  element(index: number): NetValue {
+    const one = this.#bit({ role: 'value', index });
+    return this.#threeValued ? pair(one, this.#bit({ role: 'zero', index })) : one;
+  }
+
+  /** What bit `index` of the stimulus row was in the cycle before. */
+  previousInput(index: number): NetValue {
+    const known = this.#inputs.get(index);
+    if (known !== undefined) return known;
+    const one = this.#bit({ role: 'input', index });
+    const value = this.#threeValued ? pair(one, this.#bit({ role: 'inputZero', index })) : one;
+    this.#inputs.set(index, value);
+    return value;
+  }
+
+  /** 0 in the first cycle, 1 afterwards. */
+  started(): NetValue {
+    this.#started ??= this.#bit({ role: 'started', index: 0 });
+    return this.#threeValued ? pair(this.#started, this.#started ^ 1) : this.#started;
+  }
+
+  /** Sets the next value of every bit. */
+  commit(elements: ArrayLike<NetValue>, input: (index: number) => NetValue): void {
+    const one = (value: NetValue): Literal => (this.#threeValued ? mayBeOne(value) : value);
+    this.list.forEach(({ role, index }, bit) => {
+      if (role === 'value') this.next[bit] = one(elements[index]!);
+      else if (role === 'zero') this.next[bit] = mayBeZero(elements[index]!);
+      else if (role === 'input') this.next[bit] = one(input(index));
+      else if (role === 'inputZero') this.next[bit] = mayBeZero(input(index));
+      else this.next[bit] = TRUE;
+    });
+  }
+
+  #bit(state: LogicState): Literal {
+    return this.#logic.state(this.list.push(state) - 1);
+  }
+}

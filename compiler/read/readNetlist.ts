@@ -1,0 +1,88 @@
+import type { Circuit } from '../circuit/circuit.js';
+import type { Diagnostics } from '../diagnostics/diagnostics.js';
+import type { Source } from '../diagnostics/source.js';
+import { SourceMap } from '../diagnostics/sourceMap.js';
+import { readBench } from './bench/readBench.js';
+import { elaborate } from './verilog/elaborate/elaborate.js';
+import { parseVerilog } from './verilog/parse.js';
+import type { PreprocessOptions } from './verilog/preprocess.js';
+
+/** What `readNetlist` may be told; all but `top` is for Verilog alone. */
+export interface NetlistReadOptions extends PreprocessOptions {
+  /** Name of the top module; chosen by itself where only one can be meant. */
+  readonly top?: string;
+}
+
+/** The form of a netlist file by the ending of its name. */
+const formOfEnding: Readonly<Record<string, 'verilog' | 'bench' | 'liberty'>> = {
+  '.v': 'verilog',
+  '.vh': 'verilog',
+  '.bench': 'bench',
+  '.lib': 'liberty',
+};
+
+/**
+ * Reads netlist files, together one design, into a circuit: `.v` and `.vh` Verilog, `.bench` the
+ * ISCAS'89 text form, which stands alone.
+ *
+ * Returns undefined if anything is wrong, having reported it. Throws RangeError without sources.
+ */
+export function readNetlist(
+  sources: readonly Source[],
+  options: NetlistReadOptions,
+  diagnostics: Diagnostics,
+): Circuit | undefined {
+  const [first] = sources;
+  if (first === undefined) throw new RangeError('expected at least one netlist, got none');
+  const forms = sources.map((source) => formOf(source, diagnostics));
+  if (forms.includes(undefined)) return undefined;
+  if (!forms.includes('bench')) return readVerilog(sources, options, diagnostics);
+  if (sources.length > 1) {
+    const bench = sources[forms.indexOf('bench')]!;
+    const message = `${bench.path} is a whole circuit in the ISCAS text form; give it alone`;
+    reportFile(bench, message, diagnostics);
+    return undefined;
+  }
+  const circuit = readBench(first, diagnostics);
+  if (circuit === undefined || options.top === undefined || options.top === circuit.name) {
+    return circuit;
+  }
+  const message = `the ISCAS text form has no modules, and so no ${options.top}; leave --top out`;
+  diagnostics.add('top-unknown', message, { source: first, start: 0, end: 0 });
+  return undefined;
+}
+
+function readVerilog(
+  sources: readonly Source[],
+  options: NetlistReadOptions,
+  diagnostics: Diagnostics,
+): Circuit | undefined {
+  const sourceMap = new SourceMap();
+  const errors = errorsIn(diagnostics);
+  const syntax = parseVerilog(sources, options, sourceMap, diagnostics);
+  // The tree of a text with errors has gaps; what they would lead to says nothing of the text.
+  if (errorsIn(diagnostics) > errors) return undefined;
+  const { top } = options;
+  return elaborate(syntax, top === undefined ? {} : { top }, sourceMap, diagnostics);
+}
+
+function errorsIn({ list }: Diagnostics): number {
+  return list.reduce((count, { severity }) => (severity === 'error' ? count + 1 : count), 0);
+}
+
+function formOf(source: Source, diagnostics: Diagnostics): 'verilog' | 'bench' | undefined {
+  const ending = /\.[^./\\]*$/.exec(source.path)?.[0].toLowerCase() ?? '';
+  const form = formOfEnding[ending];
+  if (form === 'verilog' || form === 'bench') return form;
+  const message =
+    form === 'liberty'
+      ? 'Liberty files are not read; give the cells as Verilog modules (.v)'
+      : `the ending ${ending === '' ? 'is missing and' : ending} tells no form; ` +
+        'rename it to .v for Verilog or .bench for the ISCAS text form';
+  reportFile(source, message, diagnostics);
+  return undefined;
+}
+
+function reportFile(source: Source, message: string, diagnostics: Diagnostics): void {
+  diagnostics.add('file-kind-unknown', message, { source, start: 0, end: 0 });
+}

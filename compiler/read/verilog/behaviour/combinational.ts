@@ -1,0 +1,109 @@
+import type { NetId } from '../../../circuit/ids.js';
+import type { NameId } from '../../names.js';
+import type { Binding } from '../scope.js';
+import type { EventSyntax, Expression, Statement } from '../syntax.js';
+import type { Context } from './context.js';
+import { driveBit, driveIndex, placeOf } from './drive.js';
+import { forEachName, plainMeaningOf } from './names.js';
+import { pathText, report } from './report.js';
+import type { Changes, Entry } from './store.js';
+
+/**
+ * Turns a level-sensitive `always` into gates, and into latches where a variable keeps its value
+ * on some path. `events` is undefined for `@*`.
+ */
+export function lowerCombinational(
+  body: Statement,
+  events: readonly EventSyntax[] | undefined,
+  context: Context,
+): void {
+  context.services.execute(body, context);
+  const { store } = context;
+  const changes = store.finish();
+  if (events !== undefined) checkSensitivity(body, events, changes, context);
+  const latched = new Map<NetId, Entry>();
+  for (const [key, entry] of changes) {
+    if (key < 0 || driveIndex(key, entry, context)) continue;
+    if (context.logic.valueOf(entry.assigned) === 1) driveBit(key, entry.value, context);
+    else if (context.logic.valueOf(entry.assigned) !== 0) latched.set(key, entry);
+  }
+  for (const [key, { value, assigned }] of latched) {
+    placeOf(key, context);
+    const initial = context.scope.shared.initialValues.get(key);
+    const pins = { output: key, enable: assigned, data: value };
+    context.logic.sink.latch(initial === undefined ? pins : { ...pins, initial });
+  }
+  warnLatches(body, latched, changes.size, context);
+}
+
+function checkSensitivity(
+  body: Statement,
+  events: readonly EventSyntax[],
+  changes: Changes,
+  context: Context,
+): void {
+  const listed = netsNamed(events, context);
+  const missing = new Set<NetId>();
+  for (const net of context.store.reads) {
+    if (!listed.has(net) && !changes.has(net)) missing.add(net);
+  }
+  if (missing.size === 0) return;
+  const names = new Set<string>();
+  forEachName(body, (expression) => {
+    const binding = plainMeaningOf(expression, context);
+    if (netsOf(binding).some((net) => missing.has(net))) {
+      names.add(`\`${pathText(context.scope.shared, expression.path)}\``);
+    }
+  });
+  if (names.size === 0) return;
+  const place = { start: events[0]!.start, end: events.at(-1)!.end };
+  const message =
+    `the event list leaves out ${[...names].join(', ')}, which ${names.size === 1 ? 'is' : 'are'} ` +
+    'read; it is taken as @*';
+  report(context.scope.shared, 'sensitivity-incomplete', place, message);
+}
+
+/** All nets of the signals that a part of the syntax tree names. */
+export function netsNamed(tree: unknown, context: Context): Set<NetId> {
+  const nets = new Set<NetId>();
+  forEachName(tree, (expression: Extract<Expression, { kind: 'name' }>) => {
+    for (const net of netsOf(plainMeaningOf(expression, context))) nets.add(net);
+  });
+  return nets;
+}
+
+function netsOf(binding: Binding | undefined): readonly NetId[] {
+  if (binding?.kind === 'signal') return binding.nets;
+  return binding?.kind === 'memory' ? binding.words.flat() : [];
+}
+
+// A process in which all is latched, under plain conditions, is how a latch is described. One
+// that also has combinational results, or a case with gaps, more likely forgot a branch.
+function warnLatches(
+  body: Statement,
+  latched: ReadonlyMap<NetId, Entry>,
+  total: number,
+  context: Context,
+): void {
+  if (latched.size === 0 || (latched.size === total && !containsCase(body))) return;
+  const { shared } = context.scope;
+  const seen = new Set<NameId>();
+  forEachName(body, (expression) => {
+    const binding = plainMeaningOf(expression, context);
+    if (binding?.kind !== 'signal' && binding?.kind !== 'memory') return;
+    const net = netsOf(binding).find((bit) => latched.has(bit));
+    if (net === undefined || seen.has(binding.name)) return;
+    seen.add(binding.name);
+    const start = context.store.places.get(net)!;
+    const message =
+      `\`${pathText(shared, expression.path)}\` is not assigned on every path and becomes a ` +
+      'latch; assign a default first, or complete the branches';
+    report(shared, 'latch-inferred', { start, end: start }, message);
+  });
+}
+
+function containsCase(tree: unknown): boolean {
+  if (Array.isArray(tree)) return tree.some(containsCase);
+  if (typeof tree !== 'object' || tree === null) return false;
+  return ('kind' in tree && tree.kind === 'case') || Object.values(tree).some(containsCase);
+}

@@ -1,0 +1,64 @@
+import type { NetId } from '../../../circuit/ids.js';
+import type { Constant, Scope } from '../scope.js';
+import type { Expression } from '../syntax.js';
+import { lowerAssigned, lowerSelf } from './expressions.js';
+import { constantContext, expressionContext } from './process.js';
+import { realConstant } from './realConstant.js';
+import { report } from './report.js';
+import { targetPieces } from './targets.js';
+import { constantIn } from './widths.js';
+
+export { lowerAlways } from './always.js';
+export { lowerInitial } from './initial.js';
+
+/**
+ * The value of a constant expression (IEEE 1364-2005, clause 5), in its own width and sign.
+ *
+ * Signals may not be read; constant functions may be called. A real number that stands alone is
+ * rounded to a whole one. Returns undefined after a diagnostic.
+ */
+export function evaluateConstant(expression: Expression, scope: Scope): Constant | undefined {
+  return realConstant(expression) ?? constantIn(expression, constantContext(scope));
+}
+
+/**
+ * Builds the gates of an expression; returns its nets, least significant bit first.
+ *
+ * With `targetWidth` the expression is worked out as the right side of an assignment to that many
+ * bits (clause 5.5.3) and the result has just that width; without, it has its own. After a
+ * diagnostic the result is x.
+ */
+export function lowerExpression(
+  expression: Expression,
+  scope: Scope,
+  targetWidth?: number,
+): NetId[] {
+  const context = expressionContext(scope);
+  return targetWidth === undefined
+    ? [...lowerSelf(expression, context)]
+    : [...lowerAssigned(expression, context, targetWidth)];
+}
+
+/**
+ * The nets that a continuous assignment or an instance's output drives, least significant first.
+ *
+ * Selects must be constant. For a bit outside of its declaration there is a warning and a net that
+ * nothing reads. Returns undefined after an error.
+ */
+export function lowerTarget(expression: Expression, scope: Scope): NetId[] | undefined {
+  const context = expressionContext(scope);
+  const pieces = targetPieces(expression, 'net', context);
+  if (pieces === undefined) return undefined;
+  const nets: NetId[] = [];
+  for (const { places } of pieces) {
+    const place = places[0];
+    if (place === undefined || context.logic.valueOf(place.when) !== 1) {
+      const message =
+        'what drives a net must have constant selects; assign a variable index in an always @*';
+      report(scope.shared, 'target-invalid', expression, message);
+      return undefined;
+    }
+    for (const net of place.bits) nets.push(net ?? scope.shared.builder.net());
+  }
+  return nets;
+}

@@ -1,0 +1,81 @@
+import type { AssignStatement, Expression, Statement } from '../syntax.js';
+import type { Context, Exits } from './context.js';
+import { Sequence } from './exits.js';
+import { lowerCondition } from './expressions.js';
+import { type Placed, report } from './report.js';
+import { countOf } from './widths.js';
+
+/** How often the body of one loop is executed at most. */
+const LOOP_LIMIT = 65536;
+
+type Assign = (statement: AssignStatement, context: Context, isLoopIndex: boolean) => void;
+
+/** Unrolls a `for` loop (clause 9.6). */
+export function executeFor(
+  statement: Extract<Statement, { kind: 'for' }>,
+  context: Context,
+  assign: Assign,
+): Exits | undefined {
+  const { initial, condition, step, body } = statement;
+  assign(initial, context, true);
+  return unroll(condition, body, context, () => assign(step, context, true));
+}
+
+/** Unrolls a `while` loop. */
+export function executeWhile(
+  statement: Extract<Statement, { kind: 'while' }>,
+  context: Context,
+): Exits | undefined {
+  return unroll(statement.condition, statement.body, context, () => {});
+}
+
+/** Unrolls a `repeat` loop; its count must be constant. */
+export function executeRepeat(
+  statement: Extract<Statement, { kind: 'repeat' }>,
+  context: Context,
+): Exits | undefined {
+  const count = countOf(statement.count, context, 0) ?? 0;
+  if (count > LOOP_LIMIT) abort(statement.count, context);
+  const sequence = new Sequence(context);
+  for (let i = 0; i < count && !context.store.aborted; i++) {
+    if (!sequence.goesOn(context.services.execute(statement.body, context))) break;
+  }
+  return sequence.close();
+}
+
+function unroll(
+  condition: Expression,
+  body: Statement,
+  context: Context,
+  step: () => void,
+): Exits | undefined {
+  const sequence = new Sequence(context);
+  for (let i = 0; goesOn(condition, context); i++) {
+    if (i === LOOP_LIMIT) {
+      abort(condition, context);
+      break;
+    }
+    if (!sequence.goesOn(context.services.execute(body, context))) break;
+    step();
+  }
+  return sequence.close();
+}
+
+function goesOn(condition: Expression, context: Context): boolean {
+  if (context.store.aborted) return false;
+  const value = context.logic.valueOf(lowerCondition(condition, context));
+  if (value !== undefined) return value === 1;
+  context.store.aborted = true;
+  const message =
+    'this loop ends by a value that depends on signals; give it constant bounds and an `if` inside';
+  report(context.scope.shared, 'loop-unbounded', condition, message);
+  return false;
+}
+
+function abort(place: Placed, context: Context): void {
+  context.store.aborted = true;
+  const message =
+    `this loop runs more than ${LOOP_LIMIT} times, too often to unroll; ` +
+    'give it smaller bounds or spread it over clock cycles';
+  report(context.scope.shared, 'loop-unbounded', place, message);
+}

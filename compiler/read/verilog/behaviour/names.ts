@@ -1,0 +1,82 @@
+import type { NameId } from '../../names.js';
+import type { Binding } from '../scope.js';
+import type { Expression } from '../syntax.js';
+import type { Context } from './context.js';
+import { resolveCalled } from './localScope.js';
+import { type Placed, pathText, report } from './report.js';
+
+/** A name as it is used at a place; `indices` as in `NameExpression`. */
+interface Named extends Placed {
+  readonly path: readonly NameId[];
+  readonly indices?: readonly (Expression | undefined)[];
+}
+
+/** What a name means; undefined, and a diagnostic, where it means nothing. */
+export function bindingOf(named: Named, context: Context): Binding | undefined {
+  return found(meaningOf(named, context), named, context);
+}
+
+/** What a name means, if anything. An index within it must be constant. */
+export function meaningOf(named: Named, context: Context): Binding | undefined {
+  return resolveWith(named, context, (index) => context.services.integer(index, context));
+}
+
+/** As `meaningOf` where values are not at hand: an index that is no plain number means nothing. */
+export function plainMeaningOf(named: Named, context: Context): Binding | undefined {
+  return resolveWith(named, context, (index) =>
+    index.kind === 'number' ? Number(index.value) : undefined,
+  );
+}
+
+// The elements of loops and arrays have names such as `g[0]`, as clause 12.4.1 writes them.
+function resolveWith(
+  { path, indices }: Named,
+  { scope }: Context,
+  numberOf: (index: Expression) => number | undefined,
+): Binding | undefined {
+  if (indices === undefined) return scope.resolve(path);
+  const { names } = scope.shared;
+  const elements: NameId[] = [];
+  for (const [i, name] of path.entries()) {
+    const index = indices[i];
+    const value = index && numberOf(index);
+    if (index !== undefined && value === undefined) return undefined;
+    elements.push(index === undefined ? name : names.internText(`${names.text(name)}[${value}]`));
+  }
+  return scope.resolve(elements);
+}
+
+/** What a name means that is called as a function or task; a diagnostic where it means nothing. */
+export function calledBinding(named: Named, context: Context): Binding | undefined {
+  return found(resolveCalled(context.scope, named.path), named, context);
+}
+
+function found(binding: Binding | undefined, named: Named, context: Context): Binding | undefined {
+  if (binding !== undefined) return binding;
+  const { shared } = context.scope;
+  const text = pathText(shared, named.path);
+  const message = `\`${text}\` is not declared here; declare it or mend its spelling`;
+  report(shared, 'name-undeclared', named, message);
+  return undefined;
+}
+
+/** Calls `visit` for each name that a part of the syntax tree reads or assigns. */
+export function forEachName(
+  tree: unknown,
+  visit: (expression: Extract<Expression, { kind: 'name' }>) => void,
+): void {
+  if (Array.isArray(tree)) {
+    for (const part of tree) forEachName(part, visit);
+  } else if (typeof tree === 'object' && tree !== null) {
+    if ('kind' in tree && tree.kind === 'name') {
+      visit(tree as Extract<Expression, { kind: 'name' }>);
+    } else {
+      for (const part of Object.values(tree)) forEachName(part, visit);
+    }
+  }
+}
+
+/** Reports a construct outside what can be built, with the way out. */
+export function refuse(context: Context, place: Placed, message: string): void {
+  report(context.scope.shared, 'not-supported', place, message);
+}

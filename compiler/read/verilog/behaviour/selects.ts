@@ -1,0 +1,290 @@
+import type { NetId } from '../../../circuit/ids.js';
+import type { MemoryBinding, SignalBinding } from '../scope.js';
+import type { Expression, NameExpression, PartExpression, SelectExpression } from '../syntax.js';
+import { bitsOf, knownOf, signedValue, unknownBits } from './bits.js';
+import type { Context } from './context.js';
+import type { Bits, Logic } from './logic.js';
+import { bindingOf, refuse } from './names.js';
+import { pathText, report } from './report.js';
+import { integerOf, partWidth, shapeOf } from './widths.js';
+import { indexOf, readWindow } from './window.js';
+
+/** The largest memory, in bits, that is read or written at a variable address. */
+const MEMORY_LIMIT = 4096;
+
+/** Bits with declared numbers, from which bits and parts are selected. */
+interface Vector {
+  readonly width: number;
+  readonly msb: number;
+  readonly lsb: number;
+  /** Value of the bit at a place counted from the right, from 0. */
+  readonly at: (position: number) => NetId;
+}
+
+/** The value of an index, constant or not. */
+export type IndexValue =
+  | { readonly kind: 'constant'; readonly value: number }
+  | { readonly kind: 'unknown' }
+  | { readonly kind: 'variable'; readonly bits: Bits; readonly signed: boolean };
+
+/** Works out an index; a constant too large to be in any range counts as just that. */
+export function indexValue(expression: Expression, context: Context): IndexValue {
+  const { width, signed } = shapeOf(expression, context);
+  const bits = context.services.lower(expression, context, width, signed);
+  const known = knownOf(bits, context.logic);
+  if (known === undefined) return { kind: 'variable', bits, signed };
+  if (known.unknown !== 0n) return { kind: 'unknown' };
+  return {
+    kind: 'constant',
+    value: Number(signed ? signedValue(known.value, width) : known.value),
+  };
+}
+
+/** Place from the right of a bit by its declared number; not in 0 … width-1 if there is none. */
+export function positionOf(vector: { msb: number; lsb: number }, index: number): number {
+  return vector.msb >= vector.lsb ? index - vector.lsb : vector.lsb - index;
+}
+
+/** The value of `a[i]`: a bit, or a word of a memory. */
+export function readSelect(expression: SelectExpression, context: Context): Bits {
+  const { base } = expression;
+  if (base.kind === 'name') {
+    const binding = bindingOf(base, context);
+    if (binding?.kind === 'memory') {
+      return readWord(binding, expression, context) ?? unknownBits(1, context.logic);
+    }
+  }
+  const vector = vectorOf(base, context);
+  if (vector === undefined) return unknownBits(1, context.logic);
+  const index = indexValue(expression.index, context);
+  if (index.kind === 'unknown') return unknownBits(1, context.logic);
+  if (index.kind === 'constant') {
+    return readFrom(vector, positionOf(vector, index.value), 1, expression, context);
+  }
+  return readMoving(vector, index, 0, 1, context.logic);
+}
+
+/** The value of a part select. */
+export function readPart(expression: PartExpression, context: Context): Bits {
+  const part = partOf(expression, vectorOf(expression.base, context), context);
+  if (part === undefined) return unknownBits(shapeOf(expression, context).width, context.logic);
+  const { vector, width, index, offset } = part;
+  if (index.kind === 'unknown') return unknownBits(width, context.logic);
+  if (index.kind === 'variable') return readMoving(vector, index, offset, width, context.logic);
+  return readFrom(vector, positionOf(vector, index.value) + offset, width, expression, context);
+}
+
+/**
+ * A part select: `width` bits from the bit numbered `index` on, `offset` places from it to the
+ * left.
+ */
+interface Part<V> {
+  readonly vector: V;
+  readonly width: number;
+  readonly index: IndexValue;
+  readonly offset: number;
+}
+
+/** Works out the numbers of a part select; a diagnostic and undefined where they make no sense. */
+export function partOf<V extends { msb: number; lsb: number }>(
+  expression: PartExpression,
+  vector: V | undefined,
+  context: Context,
+): Part<V> | undefined {
+  if (vector === undefined) return undefined;
+  const descends = vector.msb >= vector.lsb;
+  if (expression.mode !== 'range') {
+    const width = partWidth(expression, context);
+    const index = indexValue(expression.left, context);
+    const upward = (expression.mode === 'up') === descends;
+    return { vector, width, index, offset: upward ? 0 : 1 - width };
+  }
+  const left = integerOf(expression.left, context);
+  const right = integerOf(expression.right, context);
+  if (left === undefined || right === undefined) return undefined;
+  if (left !== right && left > right !== descends) {
+    const { msb, lsb } = vector;
+    report(
+      context.scope.shared,
+      'range-invalid',
+      expression,
+      `the part [${left}:${right}] runs against the declaration [${msb}:${lsb}]; swap its numbers`,
+    );
+    return undefined;
+  }
+  const width = Math.abs(left - right) + 1;
+  return { vector, width, index: { kind: 'constant', value: right }, offset: 0 };
+}
+
+/** What a bit or part is selected from, named or a word of a memory. */
+function vectorOf(base: NameExpression | SelectExpression, context: Context): Vector | undefined {
+  const name = base.kind === 'select' && base.base.kind === 'name' ? base.base : base;
+  const binding = name.kind === 'name' ? bindingOf(name, context) : undefined;
+  if (name.kind === 'name' && binding === undefined) return undefined;
+  if (binding?.kind === 'memory' && base.kind === 'select') {
+    const word = readWord(binding, base, context);
+    if (word === undefined) return undefined;
+    const { msb, lsb } = binding;
+    return { width: word.length, msb, lsb, at: (i) => word[i]! };
+  }
+  if (base.kind === 'name' && binding?.kind === 'parameter') {
+    const { value } = binding;
+    const bits = bitsOf(value, value.width, context.logic);
+    return { width: value.width, msb: value.width - 1, lsb: 0, at: (i) => bits[i]! };
+  }
+  if (base.kind === 'name' && binding?.kind === 'signal') {
+    if (binding.isVector && mayRead(base, binding, context)) {
+      const { msb, lsb, nets } = binding;
+      const at = (i: number): NetId => context.store.read(nets[i]!);
+      return { width: nets.length, msb, lsb, at };
+    }
+    if (binding.isVector) return undefined;
+  }
+  reportNoVector(base, context);
+  return undefined;
+}
+
+function reportNoVector(base: NameExpression | SelectExpression, context: Context): void {
+  const { shared } = context.scope;
+  let name = base;
+  while (name.kind === 'select') name = name.base;
+  report(
+    shared,
+    'range-invalid',
+    base,
+    `\`${pathText(shared, name.path)}\` has no bits to select here; declare it with a range`,
+  );
+}
+
+/** Whether a signal may be read here: not where a constant is asked for, unless it is a local. */
+export function mayRead(
+  expression: NameExpression,
+  binding: SignalBinding | MemoryBinding,
+  context: Context,
+): boolean {
+  if (isAccessible(binding, context)) return true;
+  const { shared } = context.scope;
+  const text = pathText(shared, expression.path);
+  const message = `\`${text}\` is a signal, but a constant is needed here; use literals and parameters`;
+  report(shared, 'constant-required', expression, message);
+  return false;
+}
+
+/** Whether the context lets a signal be read and assigned. */
+export function isAccessible(binding: SignalBinding | MemoryBinding, { access }: Context): boolean {
+  if (access === 'all') return true;
+  if (access === 'variables') return binding.kind === 'memory' || binding.isVariable;
+  const first = binding.kind === 'memory' ? binding.words[0]?.[0] : binding.nets[0];
+  return (first ?? 0) < 0;
+}
+
+function readWord(
+  memory: MemoryBinding,
+  expression: SelectExpression,
+  context: Context,
+): Bits | undefined {
+  const { logic, store } = context;
+  const width = Math.abs(memory.msb - memory.lsb) + 1;
+  if (!mayRead(expression.base as NameExpression, memory, context)) return undefined;
+  const index = indexValue(expression.index, context);
+  if (index.kind === 'unknown') return unknownBits(width, logic);
+  if (index.kind === 'constant') {
+    const word = memory.words[index.value - memory.low];
+    if (word !== undefined) return word.map((net) => store.read(net));
+    warnOutside(expression, memory.low, memory.high, context);
+    return unknownBits(width, logic);
+  }
+  if (!withinMemoryLimit(memory, expression, context)) return undefined;
+  const address = indexOf(index.bits, index.signed, memory.low, memory.high, logic);
+  return Array.from({ length: width }, (_, bit) => {
+    const leaf = (i: number): NetId => {
+      const net = memory.words[i - memory.low]?.[bit];
+      return net === undefined ? logic.unknown : store.read(net);
+    };
+    return readWindow(address, 1, leaf, logic)[0]!;
+  });
+}
+
+/** Whether a memory is small enough for a multiplexer tree or registers; a diagnostic if not. */
+export function withinMemoryLimit(
+  memory: MemoryBinding,
+  expression: SelectExpression,
+  context: Context,
+): boolean {
+  const bits = memory.words.length * (Math.abs(memory.msb - memory.lsb) + 1);
+  if (bits <= MEMORY_LIMIT) return true;
+  refuse(
+    context,
+    expression,
+    `a memory of ${bits} bits is more than can be built from registers (${MEMORY_LIMIT}); ` +
+      'make it smaller or split it into several memories',
+  );
+  return false;
+}
+
+/** Bits from a fixed place on; x, and a warning, for those that are not there. */
+function readFrom(
+  vector: Vector,
+  start: number,
+  width: number,
+  place: SelectExpression | PartExpression,
+  context: Context,
+): Bits {
+  if (start < 0 || start + width > vector.width) {
+    warnOutside(place, vector.msb, vector.lsb, context);
+  }
+  return Array.from({ length: width }, (_, i) => bitAt(vector, start + i, context.logic));
+}
+
+/** Says that a select with constant numbers is outside of what was declared. */
+export function warnOutside(
+  place: SelectExpression | PartExpression,
+  left: number,
+  right: number,
+  context: Context,
+): void {
+  report(
+    context.scope.shared,
+    'select-outside',
+    place,
+    `this select is not all within [${left}:${right}]; what lies outside reads as x and is not ` +
+      'written',
+  );
+}
+
+// Bit k of the result is `offset + k` places left of the bit that the index names. With a
+// descending range that is bit index + offset + k, so the window moves up with the index; with an
+// ascending one it is read mirrored.
+function readMoving(
+  vector: Vector,
+  index: Extract<IndexValue, { kind: 'variable' }>,
+  offset: number,
+  width: number,
+  logic: Logic,
+): Bits {
+  const range = movingRange(vector, offset, width);
+  const address = indexOf(index.bits, index.signed, range.low, range.high, logic);
+  if (vector.msb >= vector.lsb) {
+    const leaf = (i: number): NetId => bitAt(vector, i + offset - vector.lsb, logic);
+    return readWindow(address, width, leaf, logic);
+  }
+  const leaf = (i: number): NetId => bitAt(vector, vector.lsb - i + offset + width - 1, logic);
+  return [...readWindow(address, width, leaf, logic)].reverse();
+}
+
+function bitAt(vector: Vector, position: number, logic: Logic): NetId {
+  return position >= 0 && position < vector.width ? vector.at(position) : logic.unknown;
+}
+
+/** The values of a moving part's index for which any bit of it is within the vector. */
+export function movingRange(
+  vector: { readonly width: number; readonly msb: number; readonly lsb: number },
+  offset: number,
+  width: number,
+): { low: number; high: number } {
+  if (vector.msb >= vector.lsb) {
+    const low = vector.lsb - offset - width + 1;
+    return { low, high: vector.lsb + vector.width - 1 - offset };
+  }
+  return { low: vector.lsb + offset - vector.width + 1, high: vector.lsb + offset + width - 1 };
+}

@@ -1,0 +1,138 @@
+import type { Scope } from '../scope.js';
+import type { AssignStatement, Statement } from '../syntax.js';
+import { assignExpression } from './assign.js';
+import { callTask } from './calls.js';
+import { executeCase } from './cases.js';
+import { executeIf } from './conditions.js';
+import type { Context, Exits } from './context.js';
+import { Sequence } from './exits.js';
+import { LocalScope } from './localScope.js';
+import { declareLocals } from './locals.js';
+import { executeFor, executeRepeat, executeWhile } from './loops.js';
+import { refuse } from './names.js';
+import { type Placed, pathText } from './report.js';
+import { isSystemName } from './systemFunctions.js';
+import { executeSystemTask } from './systemTasks.js';
+
+/** Executes a statement symbolically on the context's store (clause 9). */
+export function executeStatement(statement: Statement, context: Context): Exits | undefined {
+  if (context.store.aborted) return undefined;
+  switch (statement.kind) {
+    case 'block':
+      return executeBlock(statement, context);
+    case 'assign':
+      return executeAssign(statement, context, false);
+    case 'if':
+      return executeIf(statement, context);
+    case 'case':
+      return executeCase(statement, context);
+    case 'for':
+      return executeFor(statement, context, executeAssign);
+    case 'repeat':
+      return executeRepeat(statement, context);
+    case 'while':
+      return executeWhile(statement, context);
+    case 'callTask':
+      if (isSystemName(statement.path, context)) executeSystemTask(statement, context);
+      else callTask(statement, context);
+      return undefined;
+    case 'disable':
+      return executeDisable(statement, context);
+    case 'null':
+      return undefined;
+    default:
+      refuseStatement(statement, context);
+      return undefined;
+  }
+}
+
+function executeBlock(
+  statement: Extract<Statement, { kind: 'block' }>,
+  context: Context,
+): Exits | undefined {
+  const { name, declarations, body } = statement;
+  let inside = context;
+  if (name !== 0 || declarations.length > 0) {
+    const enclosing = new Set([...context.enclosing, name]);
+    inside = { ...context, scope: blockScope(statement, context), enclosing };
+  }
+  const sequence = new Sequence(context);
+  for (const part of body) {
+    if (!sequence.goesOn(context.services.execute(part, inside))) break;
+  }
+  return sequence.close(name);
+}
+
+// The variables of a block in an `always` are declared with the module; those of a block in a
+// function live with the call.
+function blockScope(statement: Extract<Statement, { kind: 'block' }>, context: Context): Scope {
+  const known = context.scope.block?.(statement.name) ?? context.blocks.get(statement);
+  if (known !== undefined) return known;
+  const local = new LocalScope(context.scope);
+  declareLocals(statement.declarations, local, context);
+  context.blocks.set(statement, local);
+  return local;
+}
+
+function executeAssign(
+  statement: AssignStatement,
+  context: Context,
+  isLoopIndex: boolean,
+): undefined {
+  const { target, value, blocking, start } = statement;
+  const { index, offset } = context.scope.shared.sources.locate(start);
+  context.logic.sink.at(index, offset);
+  assignExpression(target, value, context, { blocking, place: start, isLoopIndex });
+}
+
+function executeDisable(
+  statement: Extract<Statement, { kind: 'disable' }>,
+  context: Context,
+): Exits | undefined {
+  const name = statement.path.at(-1)!;
+  if (statement.path.length === 1 && context.enclosing.has(name)) {
+    return new Map([[name, context.logic.one]]);
+  }
+  const text = pathText(context.scope.shared, statement.path);
+  const message = `\`disable ${text}\` leaves no block around it; disable an enclosing named block`;
+  refuse(context, statement, message);
+  return undefined;
+}
+
+function refuseStatement(
+  statement: Extract<Statement, { kind: 'event' | 'wait' | 'procedural' | 'forever' }>,
+  context: Context,
+): void {
+  const place: Placed = { start: statement.start, end: statement.start };
+  switch (statement.kind) {
+    case 'event':
+      refuse(
+        context,
+        place,
+        'an event control inside a procedure is not possible in a cycle model; ' +
+          'put a single @(...) in front of the whole always and keep the step in a register',
+      );
+      break;
+    case 'wait':
+      refuse(
+        context,
+        place,
+        '`wait` is not possible in a cycle model; keep the state in a register and use if',
+      );
+      break;
+    case 'forever':
+      refuse(
+        context,
+        place,
+        '`forever` has no end in a cycle model; use always @(...), and an input port as the clock',
+      );
+      break;
+    default:
+      refuse(
+        context,
+        place,
+        `procedural \`${statement.keyword}\` is not possible in a circuit; ` +
+          'use an ordinary assignment under a condition',
+      );
+  }
+}

@@ -1,0 +1,248 @@
+import type { NetId } from '../../../circuit/ids.js';
+import type { MemoryBinding, SignalBinding } from '../scope.js';
+import type { Expression, NameExpression, PartExpression, SelectExpression } from '../syntax.js';
+import type { Context } from './context.js';
+import { bindingOf, meaningOf } from './names.js';
+import { pathText, report } from './report.js';
+import {
+  type IndexValue,
+  indexValue,
+  isAccessible,
+  movingRange,
+  partOf,
+  positionOf,
+  warnOutside,
+  withinMemoryLimit,
+} from './selects.js';
+import { indexIs, indexOf } from './window.js';
+
+/**
+ * One of the places an assignment may go to: its bits, from the right, and the condition under
+ * which it is this one. A bit that is outside of the declaration is undefined.
+ */
+export interface Place {
+  readonly bits: readonly (NetId | undefined)[];
+  readonly when: NetId;
+}
+
+/** A stretch of a target: places of one width that exclude each other. */
+export interface Piece {
+  readonly width: number;
+  readonly places: readonly Place[];
+}
+
+/** What may be assigned where: variables by procedures, nets by continuous assignments. */
+type TargetKind = 'variable' | 'net';
+
+/** A vector with declared numbers whose bits are places. */
+interface Region {
+  readonly width: number;
+  readonly msb: number;
+  readonly lsb: number;
+  readonly places: readonly Place[];
+}
+
+/** The pieces of an assignment's target, from the right; undefined after a diagnostic. */
+export function targetPieces(
+  expression: Expression,
+  kind: TargetKind,
+  context: Context,
+): readonly Piece[] | undefined {
+  if (expression.kind === 'concat') {
+    const parts = expression.parts.map((part) => targetPieces(part, kind, context));
+    if (parts.some((pieces) => pieces === undefined)) return undefined;
+    return parts.reverse().flatMap((pieces) => pieces!);
+  }
+  const piece = pieceOf(expression, kind, context);
+  return piece && [piece];
+}
+
+/** Sum of the widths of a target's pieces. */
+export function targetWidth(pieces: readonly Piece[]): number {
+  return pieces.reduce((sum, { width }) => sum + width, 0);
+}
+
+function pieceOf(expression: Expression, kind: TargetKind, context: Context): Piece | undefined {
+  switch (expression.kind) {
+    case 'name':
+      return regionOf(expression, kind, context);
+    case 'select':
+      return selectPiece(expression, kind, context);
+    case 'part':
+      return partPiece(expression, kind, context);
+    default:
+      report(
+        context.scope.shared,
+        'target-invalid',
+        expression,
+        'only names, selects of them and concatenations can be assigned',
+      );
+      return undefined;
+  }
+}
+
+function regionOf(
+  expression: NameExpression,
+  kind: TargetKind,
+  context: Context,
+): Region | undefined {
+  const binding = bindingOf(expression, context);
+  if (binding === undefined) return undefined;
+  const { shared } = context.scope;
+  const text = pathText(shared, expression.path);
+  if (binding.kind !== 'signal') {
+    const message =
+      binding.kind === 'memory'
+        ? `\`${text}\` is an array; assign its words one by one`
+        : `\`${text}\` is a ${binding.kind === 'routine' ? binding.syntax.kind : binding.kind} ` +
+          'and cannot be assigned';
+    report(shared, 'target-invalid', expression, message);
+    return undefined;
+  }
+  if (binding.isVariable !== (kind === 'variable')) {
+    const message = binding.isVariable
+      ? `\`${text}\` is a variable, which only procedures assign; declare it as a wire`
+      : `\`${text}\` is a net, which procedures cannot assign; declare it as reg`;
+    report(shared, 'target-invalid', expression, message);
+    return undefined;
+  }
+  if (mayAssign(expression, binding, context)) {
+    const { msb, lsb, nets } = binding;
+    return { width: nets.length, msb, lsb, places: [{ bits: nets, when: context.logic.one }] };
+  }
+  return undefined;
+}
+
+// A constant function may change nothing but its own variables.
+function mayAssign(
+  expression: NameExpression,
+  binding: SignalBinding | MemoryBinding,
+  context: Context,
+): boolean {
+  if (isAccessible(binding, context)) return true;
+  const { shared } = context.scope;
+  const text = pathText(shared, expression.path);
+  const message = `\`${text}\` is not a local variable, so a constant function cannot assign it`;
+  report(shared, 'constant-required', expression, message);
+  return false;
+}
+
+function selectPiece(
+  expression: SelectExpression,
+  kind: TargetKind,
+  context: Context,
+): Piece | undefined {
+  const word = wordRegion(expression, kind, context);
+  if (word !== undefined) return word.region;
+  const region = baseRegion(expression.base, kind, context);
+  if (region === undefined) return undefined;
+  const index = indexValue(expression.index, context);
+  return partOfRegion(region, index, 0, 1, expression, context);
+}
+
+function partPiece(
+  expression: PartExpression,
+  kind: TargetKind,
+  context: Context,
+): Piece | undefined {
+  const part = partOf(expression, baseRegion(expression.base, kind, context), context);
+  if (part === undefined) return undefined;
+  return partOfRegion(part.vector, part.index, part.offset, part.width, expression, context);
+}
+
+/** What bits of it are selected from: a vector, or a word of a memory. */
+function baseRegion(
+  base: NameExpression | SelectExpression,
+  kind: TargetKind,
+  context: Context,
+): Region | undefined {
+  if (base.kind === 'select') {
+    const word = wordRegion(base, kind, context);
+    if (word !== undefined) return word.region;
+  } else {
+    const binding = meaningOf(base, context);
+    if (binding?.kind !== 'signal' || binding.isVector) return regionOf(base, kind, context);
+  }
+  let name = base;
+  while (name.kind === 'select') name = name.base;
+  const text = pathText(context.scope.shared, name.path);
+  const message = `\`${text}\` has no bits to select here; declare it with a range`;
+  report(context.scope.shared, 'range-invalid', base, message);
+  return undefined;
+}
+
+/** A word of a memory; undefined if the select is none of a memory. */
+function wordRegion(
+  expression: SelectExpression,
+  kind: TargetKind,
+  context: Context,
+): { region: Region | undefined } | undefined {
+  const { base } = expression;
+  if (base.kind !== 'name') return undefined;
+  const memory = bindingOf(base, context);
+  if (memory?.kind !== 'memory') return undefined;
+  if (!mayAssign(base, memory, context)) return { region: undefined };
+  if (kind === 'net') {
+    const text = pathText(context.scope.shared, base.path);
+    const message = `\`${text}\` is a memory, which only procedures assign`;
+    report(context.scope.shared, 'target-invalid', expression, message);
+    return { region: undefined };
+  }
+  const places = wordPlaces(memory, expression, context);
+  const { msb, lsb } = memory;
+  return { region: places && { width: Math.abs(msb - lsb) + 1, msb, lsb, places } };
+}
+
+function wordPlaces(
+  memory: MemoryBinding,
+  expression: SelectExpression,
+  context: Context,
+): readonly Place[] | undefined {
+  const { logic } = context;
+  const { low, high, words } = memory;
+  const index = indexValue(expression.index, context);
+  if (index.kind === 'unknown') return [];
+  if (index.kind === 'constant') {
+    const bits = words[index.value - low];
+    if (bits === undefined) warnOutside(expression, low, high, context);
+    return bits === undefined ? [] : [{ bits, when: logic.one }];
+  }
+  if (!withinMemoryLimit(memory, expression, context)) return undefined;
+  const address = indexOf(index.bits, index.signed, low, high, logic);
+  return words.map((bits, i) => ({ bits, when: indexIs(address, low + i, logic) }));
+}
+
+function partOfRegion(
+  region: Region,
+  index: IndexValue,
+  offset: number,
+  width: number,
+  expression: SelectExpression | PartExpression,
+  context: Context,
+): Piece {
+  const { logic } = context;
+  if (index.kind === 'unknown') return { width, places: [] };
+  if (index.kind === 'constant') {
+    const start = positionOf(region, index.value) + offset;
+    if (start < 0 || start + width > region.width) {
+      warnOutside(expression, region.msb, region.lsb, context);
+    }
+    return { width, places: region.places.map((place) => cut(place, start, width)) };
+  }
+  const { low, high } = movingRange(region, offset, width);
+  const address = indexOf(index.bits, index.signed, low, high, logic);
+  const places: Place[] = [];
+  for (let i = low; i <= high; i++) {
+    const chosen = indexIs(address, i, logic);
+    if (logic.valueOf(chosen) === 0) continue;
+    for (const place of region.places) {
+      const { bits } = cut(place, positionOf(region, i) + offset, width);
+      places.push({ bits, when: logic.and(place.when, chosen) });
+    }
+  }
+  return { width, places };
+}
+
+function cut({ bits, when }: Place, start: number, width: number): Place {
+  return { bits: Array.from({ length: width }, (_, i) => bits[start + i]), when };
+}

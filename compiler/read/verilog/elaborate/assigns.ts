@@ -1,0 +1,86 @@
+import { GateKind } from '../../../circuit/gates.js';
+import {
+  evaluateConstant,
+  lowerAlways,
+  lowerExpression,
+  lowerInitial,
+  lowerTarget,
+} from '../behaviour/index.js';
+import type { Expression } from '../syntax.js';
+import type { BlockScope } from './blockScope.js';
+import type { ModuleBody } from './body.js';
+import { forEachTarget } from './expressions.js';
+import { ensureDeclared } from './terminals.js';
+
+/** Declares the nets that only the left side of an `assign` names (clause 4.5). */
+export function declareTargets(body: ModuleBody): void {
+  for (const { scope, item } of body.assigns) {
+    forEachTarget(item.target, ({ path, start, end }) => {
+      if (path.length === 1) ensureDeclared(body, scope, path[0]!, start, end);
+    });
+  }
+}
+
+/** Builds the continuous assignments, those in net declarations first (clause 6.1). */
+export function lowerAssigns(body: ModuleBody): void {
+  for (const { scope, target, value } of body.netValues) {
+    lowerAssign(body, scope, target, value, target.start);
+  }
+  for (const { scope, item } of body.assigns) {
+    if (item.strength?.zero === 'highz' || item.strength?.one === 'highz') {
+      const message = 'an assignment with strength highz is not supported: its value can be z';
+      body.report('not-supported', message, item.start, item.end);
+      continue;
+    }
+    lowerAssign(body, scope, item.target, item.value, item.start);
+  }
+}
+
+/** Builds the processes, once all power-up values are known. */
+export function lowerProcesses(body: ModuleBody): void {
+  for (const { scope, target, value } of body.variableValues) {
+    setInitialValue(body, scope, target, value);
+  }
+  for (const { scope, item } of body.initials) lowerInitial(item, scope);
+  for (const { scope, item } of body.processes) {
+    body.buildAt(item.start);
+    lowerAlways(item, scope);
+  }
+}
+
+function lowerAssign(
+  body: ModuleBody,
+  scope: BlockScope,
+  target: Expression,
+  value: Expression,
+  start: number,
+): void {
+  body.buildAt(start);
+  const targets = lowerTarget(target, scope);
+  if (targets === undefined) return;
+  const values = lowerExpression(value, scope, targets.length);
+  // Lowering moves the origin to parts of the value.
+  body.buildAt(start);
+  for (const [bit, net] of targets.entries()) {
+    body.builder.drive(net, GateKind.Buf, [values[bit]!]);
+  }
+}
+
+/** `reg q = 1;` is short for an `initial` assignment (clause 6.2.1). */
+function setInitialValue(
+  body: ModuleBody,
+  scope: BlockScope,
+  target: Expression,
+  value: Expression,
+): void {
+  const constant = evaluateConstant(value, scope);
+  const binding = target.kind === 'name' ? scope.resolve(target.path) : undefined;
+  if (constant === undefined || binding?.kind !== 'signal') return;
+  const { width, signed, unknown } = constant;
+  const bits = signed ? BigInt.asIntN(width, constant.value) : constant.value;
+  for (const [index, net] of binding.nets.entries()) {
+    const place = BigInt(Math.min(index, signed ? width - 1 : index));
+    if (((unknown >> place) & 1n) === 1n) continue;
+    body.initialValues.set(net, ((bits >> BigInt(index)) & 1n) === 1n ? 1 : 0);
+  }
+}

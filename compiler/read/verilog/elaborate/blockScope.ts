@@ -1,0 +1,165 @@
+import { type NetId, netId } from '../../../circuit/ids.js';
+import type { DiagnosticCode } from '../../../diagnostics/codes.js';
+import type { Position } from '../../../diagnostics/sourceMap.js';
+import type { NameId } from '../../names.js';
+import type {
+  Binding,
+  Constant,
+  Elaboration,
+  MemoryBinding,
+  Scope,
+  SignalBinding,
+} from '../scope.js';
+import type { RoutineItem } from '../syntax.js';
+import type { Recording } from './recording.js';
+import { Flag, NO_VALUE, SymbolKind, SymbolTable } from './symbols.js';
+
+/** Width up to which the binding of a signal is made anew each time. */
+const NARROW = 4;
+
+/** What the scopes of a module have in common. */
+export interface ScopeHost extends Elaboration {
+  readonly builder: Recording;
+  readonly moduleName: NameId;
+  /** The module itself, and then every block inside it. */
+  readonly blocks: readonly BlockScope[];
+  /** The meaning of `path[at] …` inside an instance, in nets of this module. */
+  bindingInside(instance: number, path: readonly NameId[], at: number): Binding | undefined;
+  report(code: DiagnosticCode, message: string, start: Position, end: Position): void;
+}
+
+/** An array of words among the names of a scope. */
+export interface MemoryShape {
+  /** First net of the word at `low`; the words follow one another. */
+  readonly first: NetId;
+  readonly low: number;
+  readonly high: number;
+}
+
+/** A module, or a generate block or named block of statements inside one, and its names. */
+export class BlockScope implements Scope {
+  readonly shared: ScopeHost;
+  readonly parent: BlockScope | undefined;
+  /** Index into the module's blocks; 0 is the module itself. */
+  readonly index: number;
+  readonly name: NameId;
+  readonly symbols = new SymbolTable();
+  readonly constants: Constant[] = [];
+  readonly routines: RoutineItem[] = [];
+  readonly memories: MemoryShape[] = [];
+  // Only what is worth keeping: most signals are narrow, and a netlist has a million of them.
+  #bindings: Map<number, Binding> | undefined;
+
+  constructor(shared: ScopeHost, parent: BlockScope | undefined, index: number, name: NameId) {
+    this.shared = shared;
+    this.parent = parent;
+    this.index = index;
+    this.name = name;
+  }
+
+  /** The innermost scope, from this one outwards, that has a name; undefined if none has. */
+  owner(name: NameId): BlockScope | undefined {
+    for (let scope: BlockScope | undefined = this; scope; scope = scope.parent) {
+      if (scope.symbols.find(name) >= 0) return scope;
+    }
+    return undefined;
+  }
+
+  resolve(path: readonly NameId[]): Binding | undefined {
+    const owner = this.owner(path[0]!);
+    if (owner !== undefined) return owner.member(path, 0);
+    // A module may name itself at the front of a path.
+    const { blocks, moduleName } = this.shared;
+    return path[0] === moduleName && path.length > 1 ? blocks[0]!.member(path, 1) : undefined;
+  }
+
+  block(name: NameId): BlockScope | undefined {
+    const symbol = this.symbols.find(name);
+    if (symbol < 0 || this.symbols.kind(symbol) !== SymbolKind.Block) return undefined;
+    return this.shared.blocks[this.symbols.value(symbol)];
+  }
+
+  /** The meaning of `path[at] …` as a path that begins with a name of this very scope. */
+  member(path: readonly NameId[], at: number): Binding | undefined {
+    const symbol = this.symbols.find(path[at]!);
+    if (symbol < 0) return undefined;
+    if (at === path.length - 1) return this.#binding(symbol);
+    const kind = this.symbols.kind(symbol);
+    if (kind === SymbolKind.Block) return this.block(path[at]!)!.member(path, at + 1);
+    if (kind === SymbolKind.Instance) {
+      return this.shared.bindingInside(this.symbols.value(symbol), path, at + 1);
+    }
+    return undefined;
+  }
+
+  #binding(symbol: number): Binding | undefined {
+    const known = this.#bindings?.get(symbol);
+    if (known !== undefined) return known;
+    const made = this.#makeBinding(symbol);
+    const isNarrow = made?.kind === 'signal' && made.nets.length <= NARROW;
+    if (made !== undefined && !isNarrow) {
+      this.#bindings ??= new Map();
+      this.#bindings.set(symbol, made);
+    }
+    return made;
+  }
+
+  #makeBinding(symbol: number): Binding | undefined {
+    const value = this.symbols.value(symbol);
+    switch (this.symbols.kind(symbol)) {
+      case SymbolKind.Signal:
+        return this.#signal(symbol);
+      case SymbolKind.Memory:
+        return this.#memory(symbol);
+      case SymbolKind.Parameter:
+        return value === NO_VALUE
+          ? undefined
+          : { kind: 'parameter', value: this.constants[value]! };
+      case SymbolKind.Routine:
+        return { kind: 'routine', syntax: this.routines[value]!, scope: this };
+      default:
+        return undefined;
+    }
+  }
+
+  #signal(symbol: number): SignalBinding {
+    const { symbols } = this;
+    const flags = symbols.flags(symbol);
+    return {
+      kind: 'signal',
+      name: symbols.name(symbol),
+      msb: symbols.msb(symbol),
+      lsb: symbols.lsb(symbol),
+      isVector: (flags & Flag.Vector) !== 0,
+      signed: (flags & Flag.Signed) !== 0,
+      isVariable: (flags & Flag.Variable) !== 0,
+      nets: consecutive(symbols.value(symbol), symbols.width(symbol)),
+    };
+  }
+
+  #memory(symbol: number): MemoryBinding {
+    const { symbols } = this;
+    const width = symbols.width(symbol);
+    const { first, low, high } = this.memories[symbols.value(symbol)]!;
+    const words: NetId[][] = [];
+    for (let word = 0; word <= high - low; word++) {
+      words.push(consecutive(first + word * width, width));
+    }
+    return {
+      kind: 'memory',
+      name: symbols.name(symbol),
+      msb: symbols.msb(symbol),
+      lsb: symbols.lsb(symbol),
+      signed: (symbols.flags(symbol) & Flag.Signed) !== 0,
+      low,
+      high,
+      words,
+    };
+  }
+}
+
+function consecutive(first: number, count: number): NetId[] {
+  const nets: NetId[] = [];
+  for (let i = 0; i < count; i++) nets.push(netId(first + i));
+  return nets;
+}

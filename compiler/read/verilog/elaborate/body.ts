@@ -1,0 +1,183 @@
+import type { GateKind } from '../../../circuit/gates.js';
+import { GrowableUint32 } from '../../../circuit/growable.js';
+import type { NetId } from '../../../circuit/ids.js';
+import type { DiagnosticCode } from '../../../diagnostics/codes.js';
+import type { Diagnostic, Diagnostics } from '../../../diagnostics/diagnostics.js';
+import type { Position, SourceMap } from '../../../diagnostics/sourceMap.js';
+import type { NameId, NameTable } from '../../names.js';
+import type { Binding } from '../scope.js';
+import type { Expression, Item, ModuleSyntax } from '../syntax.js';
+import { BlockScope, type ScopeHost } from './blockScope.js';
+import { Children } from './children.js';
+import type { Design } from './design.js';
+import { imported } from './imports.js';
+import { wordSpan } from './messages.js';
+import { Recording } from './recording.js';
+import { SymbolKind, type SymbolTable } from './symbols.js';
+
+/** An item and the scope it stands in. */
+export interface Located<Kind extends Item['kind']> {
+  readonly scope: BlockScope;
+  readonly item: Extract<Item, { kind: Kind }>;
+}
+
+/** The value in the declaration of a net or variable. */
+export interface DeclaredValue {
+  readonly scope: BlockScope;
+  readonly target: Expression;
+  readonly value: Expression;
+}
+
+/** Value in `ModuleBody.placed` of an instance that could not be placed. */
+export const NOT_PLACED = 0xffffffff;
+
+/**
+ * A module while it is elaborated for one set of parameter values: its scopes, the work that is
+ * left, and the recording of its logic.
+ */
+export class ModuleBody implements ScopeHost {
+  readonly design: Design;
+  readonly module: ModuleSyntax;
+  readonly builder = new Recording();
+  readonly children = new Children();
+  readonly initialValues = new Map<NetId, 0 | 1>();
+  readonly blocks: BlockScope[] = [];
+
+  // Work that waits until every name is declared; `#work` has all of these lists.
+  readonly assigns: Located<'assign'>[] = [];
+  readonly instances: Located<'instances'>[] = [];
+  readonly processes: Located<'always'>[] = [];
+  readonly initials: Located<'initial'>[] = [];
+  readonly defparams: Located<'defparam'>[] = [];
+  readonly netValues: DeclaredValue[] = [];
+  readonly variableValues: DeclaredValue[] = [];
+  readonly #work: readonly unknown[][] = [
+    this.assigns,
+    this.instances,
+    this.processes,
+    this.initials,
+    this.defparams,
+    this.netValues,
+    this.variableValues,
+  ];
+  /** First child of each instance of a module or primitive, by the value of its symbol. */
+  readonly placed = new GrowableUint32(2);
+  /** Length of the instances that are arrays, by the value of their symbol. */
+  readonly arrayLengths = new Map<number, number>();
+  /** Nets with a `pullup` (One) or `pulldown` (Zero). */
+  readonly pulls = new Map<NetId, GateKind>();
+
+  constructor(design: Design, module: ModuleSyntax) {
+    this.design = design;
+    this.module = module;
+    this.blocks.push(new BlockScope(this, undefined, 0, module.name));
+  }
+
+  get names(): NameTable {
+    return this.design.names;
+  }
+
+  get sources(): SourceMap {
+    return this.design.sources;
+  }
+
+  get diagnostics(): Diagnostics {
+    return this.design.diagnostics;
+  }
+
+  get moduleName(): NameId {
+    return this.module.name;
+  }
+
+  /** How much work there is in each list, for `forgetWork`. */
+  workSoFar(): readonly number[] {
+    return this.#work.map((list) => list.length);
+  }
+
+  /** Takes back the work that came after `workSoFar`: that of a loop without end is pointless. */
+  forgetWork(lengths: readonly number[]): void {
+    for (const [index, list] of this.#work.entries()) list.length = lengths[index]!;
+  }
+
+  /** The scope of the module itself. */
+  get root(): BlockScope {
+    return this.blocks[0]!;
+  }
+
+  /** A new block inside a scope, under a name that is free there. */
+  addBlock(parent: BlockScope, name: NameId, start: Position, end: Position): BlockScope {
+    const block = new BlockScope(this, parent, this.blocks.length, name);
+    this.enterBlock(block, start, end);
+    return block;
+  }
+
+  /** Enters a block that was made for the next index into the scope around it. */
+  enterBlock(block: BlockScope, start: Position, end: Position): void {
+    const { name, index, parent } = block;
+    this.blocks.push(block);
+    parent?.symbols.add({ name, kind: SymbolKind.Block, value: index, start, end });
+  }
+
+  bindingInside(instance: number, path: readonly NameId[], at: number): Binding | undefined {
+    const child = instance === NOT_PLACED ? NOT_PLACED : this.placed.get(instance);
+    if (child === NOT_PLACED) return undefined;
+    const template = this.design.templates[this.children.template(child)]!;
+    const binding = template.scope?.member(path, at);
+    return binding && imported(binding, child, template, this.children, this.builder);
+  }
+
+  text(name: NameId): string {
+    return this.names.text(name);
+  }
+
+  /** How many children an instance has. */
+  arrayLength(instance: number): number {
+    return this.arrayLengths.get(instance) ?? 1;
+  }
+
+  /** The word that stands at a position: its start and end. */
+  wordAt(position: Position): { readonly start: Position; readonly end: Position } {
+    const { source, start } = this.sources.span(position);
+    const span = wordSpan(source, start);
+    return { start: position, end: position + span.end - span.start };
+  }
+
+  /** Lets what is recorded next have its origin at a position. */
+  buildAt(position: Position): void {
+    const { index, offset } = this.sources.locate(position);
+    this.builder.at(index, offset);
+  }
+
+  report(
+    code: DiagnosticCode,
+    message: string,
+    start: Position,
+    end: Position,
+    related?: Diagnostic['related'],
+  ): void {
+    this.diagnostics.add(code, message, this.sources.span(start, end), related);
+  }
+
+  /** Whether a name is free in a scope; reports it if not. */
+  isFree({ symbols }: BlockScope, name: NameId, start: Position, end: Position): boolean {
+    if (symbols.find(name) < 0) return true;
+    this.reportTaken(symbols, name, start, end);
+    return false;
+  }
+
+  /** Reports the second declaration of a name. */
+  reportTaken(symbols: SymbolTable, name: NameId, start: Position, end: Position): void {
+    const taken = symbols.find(name);
+    const known = symbols.start(taken);
+    const knownSpan =
+      symbols.end(taken) > known
+        ? this.sources.span(known, symbols.end(taken))
+        : this.design.wordSpan(known);
+    const own = this.sources.span(start, end);
+    // Names are not entered in the order of the text; the later one is to blame.
+    const [first, second] = known <= start ? [knownSpan, own] : [own, knownSpan];
+    const message = `${this.text(name)} is declared already; remove or rename one of the two`;
+    const related = [{ message: 'the first declaration is here', span: first }];
+    this.diagnostics.add('name-redeclared', message, second, related);
+  }
+}

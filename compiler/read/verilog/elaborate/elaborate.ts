@@ -1,0 +1,79 @@
+import { CircuitBuilder } from '../../../circuit/builder.js';
+import type { Circuit } from '../../../circuit/circuit.js';
+import type { Diagnostics } from '../../../diagnostics/diagnostics.js';
+import type { SourceMap } from '../../../diagnostics/sourceMap.js';
+import type { VerilogSyntax } from '../syntax.js';
+import { compileModule } from './compileModule.js';
+import { Design, NO_TEMPLATE } from './design.js';
+import { DistinctDiagnostics, wordSpan } from './messages.js';
+import { noOverrides } from './overrides.js';
+import { compilePrimitive } from './primitives.js';
+import { Stamper } from './stamp.js';
+import { chooseTop } from './top.js';
+import { addTopPorts, checkTopPorts } from './topPorts.js';
+
+/** What `elaborate` may be told. */
+export interface ElaborateOptions {
+  /** Name of the top module; chosen by itself where only one can be meant. */
+  readonly top?: string;
+}
+
+/**
+ * Builds the circuit that a Verilog text describes: parameters set, generate constructs and
+ * arrays expanded, instances flattened (IEEE 1364-2005, clause 12).
+ *
+ * Each module is compiled once for each set of parameter values and then stamped into the circuit
+ * for every instance. A connected port is one net with what it is connected to. `sources` must be
+ * the map that `syntax` was read with. Returns undefined if anything is wrong, after reporting it.
+ */
+export function elaborate(
+  syntax: VerilogSyntax,
+  options: ElaborateOptions,
+  sources: SourceMap,
+  diagnostics: Diagnostics,
+): Circuit | undefined {
+  const found = new DistinctDiagnostics();
+  const makers = { module: compileModule, primitive: compilePrimitive };
+  const design = new Design(syntax, sources, found, makers);
+  const circuit = build(design, options.top);
+  for (const { code, message, span, related } of found.list) {
+    diagnostics.add(code, message, span, related);
+  }
+  return circuit;
+}
+
+function build(design: Design, wanted: string | undefined): Circuit | undefined {
+  const module = chooseTop(design, wanted);
+  if (module === undefined) return undefined;
+  const index = design.template(module.name, noOverrides, module.nameStart);
+  design.unknown.report();
+  if (index === NO_TEMPLATE) return undefined;
+  const top = design.templates[index]!;
+  checkTopPorts(design, module, top);
+  // What a missing module would drive is not known.
+  if (design.unknown.isEmpty) {
+    design.undriven.report(
+      design.diagnostics,
+      (more) => `${more} more nets are read but have no driver`,
+    );
+  }
+  if (design.diagnostics.hasErrors) return undefined;
+  const builder = new CircuitBuilder();
+  for (const source of design.sources.sources) builder.addSource(source);
+  const boundary = new Stamper(builder, design.templates, design.names).stamp(top);
+  addTopPorts(builder, design, top, boundary);
+  reportLateDrivers(design, builder);
+  return design.diagnostics.hasErrors ? undefined : builder.finish(top.name);
+}
+
+// Conflicts are found module by module; only what a hierarchical name drives inside an instance
+// can meet another driver as late as here.
+function reportLateDrivers(design: Design, builder: CircuitBuilder): void {
+  for (const { net, sourceIndex, offset } of builder.extraDrivers) {
+    const span = wordSpan(design.sources.sources[sourceIndex]!, offset);
+    const first = builder.originOf(net);
+    const related = first && [{ message: 'also driven here', span: first }];
+    const message = 'a second driver of a net that has one inside an instance; leave one of them';
+    design.diagnostics.add('net-multiply-driven', message, span, related);
+  }
+}

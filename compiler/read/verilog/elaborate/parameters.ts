@@ -1,0 +1,54 @@
+import { evaluateConstant } from '../behaviour/index.js';
+import type { Constant } from '../scope.js';
+import type { Item, ParameterItem } from '../syntax.js';
+import type { BlockScope } from './blockScope.js';
+import type { ModuleBody } from './body.js';
+import { converted, evaluateRange } from './constants.js';
+import type { Overrides } from './overrides.js';
+import { NO_VALUE, SymbolKind } from './symbols.js';
+
+/**
+ * Gives the parameters among some items their values, in order: the override, or the value
+ * declared (IEEE 1364-2005, clauses 4.10 and 12.2).
+ */
+export function bindParameters(
+  body: ModuleBody,
+  scope: BlockScope,
+  items: readonly Item[],
+  overrides: Overrides,
+): void {
+  for (const item of items) {
+    if (item.kind !== 'parameter') continue;
+    const type = parameterType(item, scope);
+    for (const { name, value, start, end } of item.values) {
+      if (!body.isFree(scope, name, start, end)) continue;
+      const override = item.local ? undefined : overrides.values.get(name);
+      // A real parameter only ever times something, which is set aside.
+      const given = isReal(item) ? undefined : (override ?? evaluateConstant(value, scope));
+      const constant = given && typed(given, type);
+      const index = constant === undefined ? NO_VALUE : scope.constants.push(constant) - 1;
+      scope.symbols.add({ name, kind: SymbolKind.Parameter, value: index, start, end });
+    }
+  }
+}
+
+interface ParameterType {
+  readonly width: number | undefined;
+  readonly signed: boolean;
+}
+
+function parameterType(item: ParameterItem, scope: BlockScope): ParameterType | undefined {
+  if (item.type === 'integer') return { width: 32, signed: true };
+  if (item.type === 'time') return { width: 64, signed: false };
+  const range = item.range && evaluateRange(item.range, scope);
+  if (range === undefined && !item.signed) return undefined;
+  const width = range && Math.abs(range.msb - range.lsb) + 1;
+  return { width, signed: item.signed };
+}
+
+function typed(constant: Constant, type: ParameterType | undefined): Constant {
+  if (type === undefined) return constant;
+  return converted(constant, type.width ?? constant.width, type.signed);
+}
+
+const isReal = (item: ParameterItem): boolean => item.type === 'real' || item.type === 'realtime';

@@ -1,0 +1,194 @@
+import type { Position } from '../../../diagnostics/sourceMap.js';
+import type { NameId } from '../../names.js';
+import { evaluateConstant } from '../behaviour/index.js';
+import type { Constant } from '../scope.js';
+import type { RangeSyntax } from '../syntax.js';
+import type { BlockScope } from './blockScope.js';
+import { type ModuleBody, NOT_PLACED } from './body.js';
+import { evaluateRange } from './constants.js';
+import { defparamsOf } from './defparams.js';
+import { NO_TEMPLATE } from './design.js';
+import { type DeepOverride, noOverrides, type Overrides } from './overrides.js';
+import { SymbolKind } from './symbols.js';
+
+/**
+ * Gives every instance its name in its scope. The value of the symbol is the instance's number
+ * among those of modules and primitives, or `NOT_PLACED` for a built-in gate.
+ */
+export function nameInstances(body: ModuleBody): void {
+  const table = body.module.instances;
+  let number = 0;
+  for (const { scope, item } of body.instances) {
+    for (let instance = item.first; instance < item.first + item.count; instance++) {
+      const value = table.module(instance) < 0 ? NOT_PLACED : number++;
+      const name = table.name(instance);
+      if (name !== 0) addName(body, scope, name, value, table.position(instance));
+    }
+  }
+  body.placed.extend(number, NOT_PLACED);
+}
+
+/**
+ * Makes a child of every instance of a module or primitive, several of an array, with nothing
+ * connected yet. Their order is that of the instances; an array begins with its rightmost element.
+ */
+export function placeInstances(body: ModuleBody, deep: readonly DeepOverride[]): void {
+  const defparams = defparamsOf(body, deep);
+  const table = body.module.instances;
+  let number = 0;
+  for (const { scope, item } of body.instances) {
+    for (let instance = item.first; instance < item.first + item.count; instance++) {
+      if (table.module(instance) < 0) continue;
+      placeInstance(body, scope, instance, number, defparams.get(number));
+      number++;
+    }
+  }
+}
+
+function addName(
+  body: ModuleBody,
+  { symbols }: BlockScope,
+  name: NameId,
+  value: number,
+  position: Position,
+): void {
+  if (symbols.find(name) >= 0) {
+    const { start, end } = body.wordAt(position);
+    body.reportTaken(symbols, name, start, end);
+    return;
+  }
+  // The end of the word is found out when a message needs it.
+  const { Instance: kind } = SymbolKind;
+  symbols.add({ name, kind, value, start: position, end: position });
+}
+
+function placeInstance(
+  body: ModuleBody,
+  scope: BlockScope,
+  instance: number,
+  number: number,
+  defparams: Overrides | undefined,
+): void {
+  const { design, module } = body;
+  const table = module.instances;
+  const definition = table.module(instance);
+  const position = table.position(instance);
+  if (design.definition(definition) === undefined) {
+    design.unknown.add(table, instance);
+    return;
+  }
+  const extras = table.extras(instance);
+  const isPrimitive = design.isPrimitive(definition);
+  // What looks like parameters of a primitive is its delay.
+  const overrides = isPrimitive ? noOverrides : overridesOf(body, scope, instance, defparams);
+  const template = overrides && design.template(definition, overrides, position);
+  if (template === undefined || template === NO_TEMPLATE) return;
+  const name = table.name(instance);
+  if (name === 0 && !isPrimitive) {
+    const { start, end } = body.wordAt(position);
+    const message = `the instance of module ${body.text(definition)} has no name; give it one`;
+    body.report('syntax-error', message, start, end);
+  }
+  const placed = { template, name: isPrimitive ? 0 : name, scope, position };
+  if (extras?.range === undefined) body.placed.set(number, addChild(body, placed));
+  else placeArray(body, placed, number, extras.range);
+}
+
+/** What a child is made of. */
+interface Placed {
+  readonly template: number;
+  /** 0 where it makes no scope. */
+  readonly name: NameId;
+  readonly scope: BlockScope;
+  readonly position: Position;
+}
+
+function addChild(
+  { design, children, sources }: ModuleBody,
+  { template, name, scope, position }: Placed,
+): number {
+  const width = design.templates[template]!.boundary.length;
+  const { index: source, offset } = sources.locate(position);
+  return children.add(template, name, scope.index, { source, offset }, width);
+}
+
+function placeArray(body: ModuleBody, placed: Placed, number: number, syntax: RangeSyntax): void {
+  const range = evaluateRange(syntax, placed.scope);
+  if (range === undefined) return;
+  const { msb, lsb } = range;
+  const { symbols } = placed.scope;
+  const { start, end } = syntax;
+  const step = msb < lsb ? -1 : 1;
+  body.arrayLengths.set(number, Math.abs(msb - lsb) + 1);
+  for (let index = lsb; index !== msb + step; index += step) {
+    const base = placed.name;
+    const name = base === 0 ? 0 : body.names.internText(`${body.text(base)}[${index}]`);
+    const child = addChild(body, { ...placed, name });
+    if (index === lsb) body.placed.set(number, child);
+    if (name === 0 || !body.isFree(placed.scope, name, start, end)) continue;
+    const value = body.placed.length;
+    body.placed.push(child);
+    symbols.add({ name, kind: SymbolKind.Instance, value, start, end });
+  }
+}
+
+/** What `#(…)` and `defparam` give; undefined after a report. */
+function overridesOf(
+  body: ModuleBody,
+  scope: BlockScope,
+  instance: number,
+  defparams: Overrides | undefined,
+): Overrides | undefined {
+  const parameters = body.module.instances.extras(instance)?.parameters ?? [];
+  if (parameters.length === 0 && defparams === undefined) return noOverrides;
+  const definition = body.module.instances.module(instance);
+  const known = body.design.parametersOf(definition);
+  const values = new Map<NameId, Constant>();
+  let failed = false;
+  for (const [place, { name, value }] of parameters.entries()) {
+    const parameter = name === 0 ? known[place] : known.find((each) => each === name);
+    if (parameter === undefined) {
+      reportParameter(body, definition, name, value);
+      failed = true;
+      continue;
+    }
+    const constant = value.kind === 'real' ? undefined : evaluateConstant(value, scope);
+    if (constant !== undefined) values.set(parameter, constant);
+    else failed ||= value.kind !== 'real';
+  }
+  for (const [name, value] of defparams?.values ?? []) {
+    if (known.includes(name)) values.set(name, value);
+    else {
+      reportParameter(
+        body,
+        definition,
+        name,
+        body.wordAt(body.module.instances.position(instance)),
+      );
+      failed = true;
+    }
+  }
+  return failed ? undefined : { values, deep: defparams?.deep ?? [] };
+}
+
+function reportParameter(
+  body: ModuleBody,
+  module: NameId,
+  name: NameId,
+  { start, end }: { readonly start: Position; readonly end: Position },
+): void {
+  const known = body.design.parametersOf(module).map((each) => body.text(each));
+  const list = known.length === 0 ? 'it has none' : `it has ${known.join(', ')}`;
+  const text = body.text(module);
+  if (name !== 0) {
+    const message = `module ${text} has no parameter ${body.text(name)}; ${list}`;
+    body.report('name-undeclared', message, start, end);
+  } else {
+    body.report(
+      'port-count',
+      `more parameter values than module ${text} takes; ${list}`,
+      start,
+      end,
+    );
+  }
+}

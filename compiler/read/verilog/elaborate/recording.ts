@@ -1,0 +1,247 @@
+import type { LatchPins, RegisterPins } from '../../../circuit/builder.js';
+import { Edge, Priority } from '../../../circuit/circuit.js';
+import { GateKind } from '../../../circuit/gates.js';
+import { GrowableUint8, GrowableUint32 } from '../../../circuit/growable.js';
+import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
+import { X } from '../../../circuit/values.js';
+import type { GateSink } from '../scope.js';
+import { Unions } from './unions.js';
+
+/** A place as `GateSink.at` takes it: index of a source, byte offset in it. */
+export interface Origin {
+  readonly source: number;
+  readonly offset: number;
+}
+
+/**
+ * The fan-in list of a register or latch: these five numbers, with `NO_NET` for an absent net.
+ * `Control` is the clock or the enable, `Attributes` what `packAttributes` makes.
+ */
+export const Pin = { Control: 0, Data: 1, Set: 2, Reset: 3, Attributes: 4 } as const;
+
+/** Kind of a driver that was taken out of a recording. */
+export const DROPPED = 255;
+
+const packAttributes = (edge: number, priority: number, initial: number): number =>
+  edge | (priority << 1) | (initial << 3);
+
+/** Edge, priority and power-up value out of the last number of a state element's list. */
+export const unpackAttributes = (packed: number) => ({
+  edge: packed & 1,
+  priority: (packed >> 1) & 3,
+  initial: packed >> 3,
+});
+
+/**
+ * The logic of one module, as columns of nets and drivers in the order they were recorded.
+ *
+ * Net ids are those of this module. A net may have any number of drivers here; what that means is
+ * decided when the module is complete.
+ */
+export class Recording implements GateSink {
+  readonly #unions = new Unions();
+  readonly #netSource = new GrowableUint32(8);
+  readonly #netOffset = new GrowableUint32(8);
+  // 1 for a net that a declaration has named.
+  readonly #declared = new GrowableUint8(8);
+  readonly #firstDriver = new GrowableUint32(8);
+  readonly #output = new GrowableUint32(8);
+  readonly #kind = new GrowableUint8(8);
+  readonly #start = new GrowableUint32(8);
+  readonly #source = new GrowableUint32(8);
+  readonly #offset = new GrowableUint32(8);
+  readonly #fanin = new GrowableUint32(16);
+  readonly #constants = new Map<number, NetId>();
+  #undeclared = 0;
+  #atSource = 0;
+  #atOffset = 0;
+
+  at(sourceIndex: number, offset: number): void {
+    this.#atSource = sourceIndex;
+    this.#atOffset = offset;
+  }
+
+  get netCount(): number {
+    return this.#netOffset.length;
+  }
+
+  net(): NetId {
+    this.#undeclared++;
+    return this.#add(0);
+  }
+
+  #add(declared: number): NetId {
+    this.#declared.push(declared);
+    this.#netSource.push(this.#atSource);
+    this.#netOffset.push(this.#atOffset);
+    this.#firstDriver.push(0);
+    return netId(this.#netOffset.length - 1);
+  }
+
+  /** New nets with consecutive ids, for something declared; returns the first. */
+  declare(count: number): NetId {
+    const first = netId(this.netCount);
+    for (let i = 0; i < count; i++) this.#add(1);
+    return first;
+  }
+
+  /** Whether there is a net that no declaration has named. */
+  get hasUndeclared(): boolean {
+    return this.#undeclared > 0;
+  }
+
+  /** Whether a declaration has named a net. */
+  isDeclared(net: number): boolean {
+    return this.#declared.get(net) === 1;
+  }
+
+  /** Makes two nets one. */
+  join(a: NetId, b: NetId): void {
+    const driver = this.#firstDriver.get(this.find(a)) || this.#firstDriver.get(this.find(b));
+    this.#unions.join(a, b);
+    this.#firstDriver.set(this.find(a), driver);
+  }
+
+  /** The oldest of the nets that a net is one with. */
+  find(net: NetId): NetId {
+    return netId(this.#unions.find(net));
+  }
+
+  /** Whether any nets were joined. */
+  get hasJoins(): boolean {
+    return !this.#unions.isEmpty;
+  }
+
+  isDriven(net: NetId): boolean {
+    return this.#firstDriver.get(this.find(net)) !== 0;
+  }
+
+  kindOf(net: NetId): number {
+    const driver = this.#firstDriver.get(this.find(net));
+    if (driver === 0) return -1;
+    const kind = this.#kind.get(driver - 1);
+    return kind <= GateKind.Unknown && this.isDeclared(net) ? -1 : kind;
+  }
+
+  drive(net: NetId, kind: GateKind, fanin: readonly NetId[]): void {
+    this.#begin(net, kind);
+    for (const source of fanin) this.#fanin.push(source);
+  }
+
+  gate(kind: GateKind, fanin: readonly NetId[]): NetId {
+    if (kind <= GateKind.Unknown) return this.constant(kind);
+    const net = this.net();
+    this.drive(net, kind, fanin);
+    return net;
+  }
+
+  /** The module's one net of a constant. */
+  constant(kind: GateKind): NetId {
+    const known = this.#constants.get(kind);
+    if (known !== undefined) return known;
+    const net = this.net();
+    this.#constants.set(kind, net);
+    this.drive(net, kind, []);
+    return net;
+  }
+
+  register(pins: RegisterPins): void {
+    this.#begin(pins.output, GateKind.Register);
+    this.#pins(pins, pins.clock, pins.edge ?? Edge.Rising);
+  }
+
+  latch(pins: LatchPins): void {
+    this.#begin(pins.output, GateKind.Latch);
+    this.#pins(pins, pins.enable ?? NO_NET, Edge.Rising);
+  }
+
+  // ---- What was recorded, for completing and stamping the module ----
+
+  get driverCount(): number {
+    return this.#output.length;
+  }
+
+  driverOutput(driver: number): NetId {
+    return netId(this.#output.get(driver));
+  }
+
+  /** Takes a driver out; its kind is `DROPPED` from now on. */
+  drop(driver: number): void {
+    this.#kind.set(driver, DROPPED);
+  }
+
+  /** Makes a driver a constant, whatever it read before. */
+  makeConstant(driver: number, kind: GateKind): void {
+    this.#kind.set(driver, kind);
+  }
+
+  /** Lets a driver drive another net. */
+  redirect(driver: number, net: NetId): void {
+    this.#output.set(driver, net);
+  }
+
+  /** A `GateKind`, or `DROPPED`. */
+  driverKind(driver: number): number {
+    return this.#kind.get(driver);
+  }
+
+  faninStart(driver: number): number {
+    return this.#start.get(driver);
+  }
+
+  /**
+   * End of a driver's stretch of the fan-in list, the list of `Pin` numbers included. That of a
+   * constant has no meaning.
+   */
+  faninEnd(driver: number): number {
+    return driver + 1 < this.#start.length ? this.#start.get(driver + 1) : this.#fanin.length;
+  }
+
+  faninAt(index: number): NetId {
+    return netId(this.#fanin.get(index));
+  }
+
+  netSource(net: number): number {
+    return this.#netSource.get(net);
+  }
+
+  netOffset(net: number): number {
+    return this.#netOffset.get(net);
+  }
+
+  netOrigin(net: number): Origin {
+    return { source: this.netSource(net), offset: this.netOffset(net) };
+  }
+
+  driverSource(driver: number): number {
+    return this.#source.get(driver);
+  }
+
+  driverOffset(driver: number): number {
+    return this.#offset.get(driver);
+  }
+
+  driverOrigin(driver: number): Origin {
+    return { source: this.driverSource(driver), offset: this.driverOffset(driver) };
+  }
+
+  #begin(net: NetId, kind: GateKind): void {
+    const driver = this.#output.length;
+    const root = this.find(net);
+    if (this.#firstDriver.get(root) === 0) this.#firstDriver.set(root, driver + 1);
+    this.#output.push(net);
+    this.#kind.push(kind);
+    this.#start.push(this.#fanin.length);
+    this.#source.push(this.#atSource);
+    this.#offset.push(this.#atOffset);
+  }
+
+  #pins(pins: LatchPins, control: NetId, edge: number): void {
+    this.#fanin.push(control);
+    this.#fanin.push(pins.data ?? NO_NET);
+    this.#fanin.push(pins.set ?? NO_NET);
+    this.#fanin.push(pins.reset ?? NO_NET);
+    const priority = pins.priority ?? Priority.ResetWins;
+    this.#fanin.push(packAttributes(edge, priority, pins.initial ?? X));
+  }
+}

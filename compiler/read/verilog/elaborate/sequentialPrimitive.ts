@@ -1,0 +1,40 @@
+import type { NetId } from '../../../circuit/ids.js';
+import { buildFlipFlop } from './flipFlopPrimitive.js';
+import { buildLatch } from './latchPrimitive.js';
+import type { PrimitiveTable } from './primitiveTable.js';
+import type { Recording } from './recording.js';
+import { TableBehaviour } from './tableBehaviour.js';
+
+/** The nets of a sequential primitive, and its value at power-up: 0, 1, or 2 for none. */
+export interface StatePins {
+  readonly output: NetId;
+  readonly inputs: readonly NetId[];
+  /** Names of the inputs, for messages. */
+  readonly names: readonly string[];
+  readonly initial: number;
+}
+
+/**
+ * Builds a sequential primitive as a flip-flop or a latch, by what its table does for every
+ * combination and every change of its inputs (IEEE 1364-2005, clauses 8.4 to 8.9).
+ *
+ * An input whose every change makes the output x, as one that reports timing violations, is taken
+ * never to change. Returns the reason where the table is neither.
+ */
+export function lowerSequential(
+  table: PrimitiveTable,
+  pins: StatePins,
+  recording: Recording,
+): string | undefined {
+  const behaviour = new TableBehaviour(table);
+  const clocks = behaviour.clocks();
+  if (clocks.length > 1) {
+    const names = [...new Set(clocks.map(({ input }) => pins.names[input]))];
+    const what = names.length === 1 ? `both edges of ${names[0]}` : `edges of ${names.join(', ')}`;
+    return `${what} give it a new value; use always blocks in its place`;
+  }
+  const [clock] = clocks;
+  return clock === undefined
+    ? buildLatch(behaviour, pins, recording)
+    : buildFlipFlop(behaviour, clock, pins, recording);
+}

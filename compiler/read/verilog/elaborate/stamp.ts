@@ -1,0 +1,189 @@
+import type { CircuitBuilder } from '../../../circuit/builder.js';
+import { GateKind } from '../../../circuit/gates.js';
+import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
+import type { NameTable } from '../../names.js';
+import { DROPPED, type Origin, Pin, unpackAttributes } from './recording.js';
+import type { Template } from './template.js';
+
+/** A template that is being stamped: how far its children are, and where its nets went. */
+interface Frame {
+  template: Template;
+  /** The circuit's net for each net of the template. */
+  nets: Uint32Array;
+  /** The circuit's scope of each block of the template. */
+  scopes: number[];
+  nextChild: number;
+  /** Where the circuit's logic is said to come from, instead of the text of a library cell. */
+  origin: Origin | undefined;
+}
+
+/**
+ * Writes a template and everything below it into a circuit.
+ *
+ * Each net of an instance's boundary is the net that the instance connects to it; every other net
+ * is made anew for each instance.
+ */
+export class Stamper {
+  readonly #builder: CircuitBuilder;
+  readonly #templates: readonly Template[];
+  readonly #names: NameTable;
+  // One frame per level of hierarchy, kept for the next instance on that level.
+  readonly #frames: Frame[] = [];
+  // Lists of each length that gates are handed over in, so that none is made per gate.
+  readonly #lists: NetId[][] = [];
+  /** Index of the names of each template's first block in the circuit. */
+  readonly #modules = new Map<Template, number>();
+
+  constructor(builder: CircuitBuilder, templates: readonly Template[], names: NameTable) {
+    this.#builder = builder;
+    this.#templates = templates;
+    this.#names = names;
+  }
+
+  /** Stamps the top; returns the circuit's nets of its boundary. */
+  stamp(top: Template): Uint32Array {
+    const frame = this.#enter(0, top, undefined);
+    this.#fill(frame);
+    this.#addScopes(frame, top.name, 0);
+    const boundary = top.boundary.map((net) => frame.nets[net]!);
+    for (let depth = 0; depth >= 0; ) {
+      const current = this.#frames[depth]!;
+      if (current.nextChild === current.template.children.count) depth--;
+      else if (this.#stampChild(current, current.nextChild++, depth + 1)) depth++;
+    }
+    return boundary;
+  }
+
+  /** Stamps a child's own logic; whether it has children to be stamped. */
+  #stampChild(parent: Frame, child: number, depth: number): boolean {
+    const { children } = parent.template;
+    const template = this.#templates[children.template(child)]!;
+    const takesOver = parent.origin === undefined && template.isCell;
+    const frame = this.#enter(depth, template, takesOver ? children.origin(child) : parent.origin);
+    const { nets } = frame;
+    const { boundary } = template;
+    for (let place = 0; place < boundary.length; place++) {
+      const net = children.port(child, place);
+      if (net !== NO_NET) nets[boundary[place]!] = parent.nets[net]!;
+    }
+    for (const { childNet, net } of children.imports(child)) nets[childNet] = parent.nets[net]!;
+    this.#fill(frame);
+    const name = children.name(child);
+    if (name !== 0) {
+      this.#addScopes(frame, this.#names.text(name), parent.scopes[children.block(child)]!);
+    }
+    return template.children.count > 0;
+  }
+
+  #enter(depth: number, template: Template, origin: Origin | undefined): Frame {
+    const count = template.recording.netCount;
+    let frame = this.#frames[depth];
+    if (frame === undefined) {
+      frame = { template, nets: new Uint32Array(64), scopes: [], nextChild: 0, origin };
+      this.#frames[depth] = frame;
+    }
+    if (frame.nets.length < count) frame.nets = new Uint32Array(count * 2);
+    frame.nets.fill(NO_NET, 0, count);
+    frame.template = template;
+    frame.nextChild = 0;
+    frame.origin = origin;
+    return frame;
+  }
+
+  /** Makes the nets that are not connected yet, and all drivers. */
+  #fill({ template, nets, origin }: Frame): void {
+    const { recording, canonical, unused } = template;
+    const builder = this.#builder;
+    if (origin !== undefined) builder.at(origin.source, origin.offset);
+    for (let net = 0; net < recording.netCount; net++) {
+      const older = canonical === undefined ? net : (canonical[net] ?? net);
+      if (older !== net) {
+        nets[net] = nets[older]!;
+      } else if (nets[net] === NO_NET && unused?.[net] !== 1) {
+        if (origin === undefined) builder.at(recording.netSource(net), recording.netOffset(net));
+        nets[net] = builder.net();
+      }
+    }
+    for (let driver = 0; driver < recording.driverCount; driver++) {
+      if (origin === undefined) {
+        builder.at(recording.driverSource(driver), recording.driverOffset(driver));
+      }
+      this.#drive(template, nets, driver);
+    }
+  }
+
+  #drive({ recording }: Template, nets: Uint32Array, driver: number): void {
+    const kind = recording.driverKind(driver);
+    if (kind === DROPPED) return;
+    const output = netId(nets[recording.driverOutput(driver)]!);
+    const start = recording.faninStart(driver);
+    if (kind === GateKind.Register || kind === GateKind.Latch) {
+      this.#driveState(kind, output, this.#translated(recording, nets, start, Pin.Attributes), {
+        ...unpackAttributes(recording.faninAt(start + Pin.Attributes)),
+      });
+      return;
+    }
+    const count = kind <= GateKind.Unknown ? 0 : recording.faninEnd(driver) - start;
+    const fanin = this.#translated(recording, nets, start, count);
+    this.#builder.drive(output, kind as GateKind, fanin);
+  }
+
+  #driveState(
+    kind: number,
+    output: NetId,
+    pins: readonly NetId[],
+    attributes: ReturnType<typeof unpackAttributes>,
+  ): void {
+    const control = pins[Pin.Control]!;
+    const common = {
+      output,
+      data: pins[Pin.Data]!,
+      set: pins[Pin.Set]!,
+      reset: pins[Pin.Reset]!,
+      priority: attributes.priority,
+      initial: attributes.initial,
+    };
+    if (kind === GateKind.Latch) this.#builder.latch({ ...common, enable: control });
+    else this.#builder.register({ ...common, clock: control, edge: attributes.edge });
+  }
+
+  /** A stretch of the fan-in list in nets of the circuit; overwritten by the next call. */
+  #translated(
+    recording: Template['recording'],
+    nets: Uint32Array,
+    start: number,
+    count: number,
+  ): readonly NetId[] {
+    this.#lists[count] ??= new Array<NetId>(count).fill(NO_NET);
+    const list = this.#lists[count];
+    for (let i = 0; i < count; i++) {
+      const net = recording.faninAt(start + i);
+      list[i] = net === NO_NET ? NO_NET : netId(nets[net]!);
+    }
+    return list;
+  }
+
+  /** Adds a scope for an instance and one for each block inside it. */
+  #addScopes({ template, nets, scopes }: Frame, name: string, parent: number): void {
+    const { hierarchy } = this.#builder;
+    const { blocks } = template;
+    let module = this.#modules.get(template);
+    if (module === undefined) {
+      for (const [index, block] of blocks.entries()) {
+        const id = hierarchy.addModule(block.names);
+        if (index === 0) module = id;
+      }
+      this.#modules.set(template, module!);
+    }
+    scopes.length = 0;
+    for (let index = 0; index < blocks.length; index++) {
+      const block = blocks[index]!;
+      for (let bit = 0; bit < block.nets.length; bit++) {
+        block.scratch[bit] = nets[block.nets[bit]!]!;
+      }
+      const outer = index === 0 ? parent : scopes[block.parent]!;
+      const own = index === 0 ? name : block.name;
+      scopes.push(hierarchy.addScope(own, outer, module! + index, block.scratch));
+    }
+  }
+}

@@ -1,0 +1,170 @@
+import { GrowableUint32 } from '../../../circuit/growable.js';
+import type { Position } from '../../../diagnostics/sourceMap.js';
+import type { NameId } from '../../names.js';
+import { NameIndex } from './nameIndex.js';
+
+/** What a name of a module is; the comment tells what the symbol's `value` then holds. */
+export const SymbolKind = {
+  /** First net; the others follow it. */
+  Signal: 0,
+  /** Index into the scope's `memories`. */
+  Memory: 1,
+  /** Index into the scope's `constants`, or `NO_VALUE`. */
+  Parameter: 2,
+  /** Index into the scope's `routines`. */
+  Routine: 3,
+  /** Index into the module's `blocks`. */
+  Block: 4,
+  /** Index into the module's placed instances. */
+  Instance: 5,
+  /** Nothing: the loop's blocks hold the value as a parameter. */
+  Genvar: 6,
+  /** Nothing: a name that is known but has no meaning here, such as an event. */
+  Other: 7,
+} as const;
+
+/** Value of a parameter that has none because of an error or because it is real. */
+export const NO_VALUE = 0xffffffff;
+
+/** Bits of a symbol's flags. */
+export const Flag = {
+  Vector: 1,
+  Signed: 2,
+  Variable: 4,
+  Input: 8,
+  Output: 16,
+  /** Declared with a type word, as against a bare port declaration. */
+  Typed: 32,
+  Implicit: 64,
+  Inout: 8 | 16,
+} as const;
+
+/** How the drivers of a net are resolved, and what it is without one. */
+export const NetClass = {
+  Plain: 0,
+  And: 1,
+  Or: 2,
+  Pull0: 3,
+  Pull1: 4,
+  Supply0: 5,
+  Supply1: 6,
+} as const;
+
+/** What `SymbolTable.add` takes. */
+export interface NewSymbol {
+  readonly name: NameId;
+  readonly kind: number;
+  readonly value: number;
+  readonly start: Position;
+  readonly end: Position;
+  readonly flags?: number;
+  readonly netClass?: number;
+  readonly msb?: number;
+  readonly lsb?: number;
+}
+
+// One record of numbers per symbol: a generate loop makes thousands of small tables, where a
+// column for each field would cost far more than what it holds.
+const Field = { Name: 0, Traits: 1, Value: 2, Start: 3, End: 4, Msb: 5, Lsb: 6 } as const;
+const RECORD = 7;
+
+// `Traits` holds the kind in its lowest byte, then the flags, then the net class.
+const FLAGS = 8;
+const CLASS = 16;
+const BYTE = 0xff;
+
+/** The names of one scope: twenty-eight bytes a symbol, so that a module may have a million. */
+export class SymbolTable {
+  readonly #index = new NameIndex();
+  readonly #records = new GrowableUint32(2 * RECORD);
+  #count = 0;
+
+  get count(): number {
+    return this.#count;
+  }
+
+  /** The symbol of a name, or -1. */
+  find(name: NameId): number {
+    return this.#index.get(name);
+  }
+
+  /** Adds a symbol; the name must be new. */
+  add(symbol: NewSymbol): number {
+    const id = this.#count++;
+    const { flags = 0, netClass = NetClass.Plain, msb = 0, lsb = 0 } = symbol;
+    this.#index.set(symbol.name, id);
+    const records = this.#records;
+    records.push(symbol.name);
+    records.push(symbol.kind | (flags << FLAGS) | (netClass << CLASS));
+    records.push(symbol.value);
+    records.push(symbol.start);
+    records.push(symbol.end);
+    records.push(msb);
+    records.push(lsb);
+    return id;
+  }
+
+  name(symbol: number): NameId {
+    return this.#get(symbol, Field.Name);
+  }
+
+  /** A `SymbolKind`. */
+  kind(symbol: number): number {
+    return this.#get(symbol, Field.Traits) & BYTE;
+  }
+
+  value(symbol: number): number {
+    return this.#get(symbol, Field.Value);
+  }
+
+  start(symbol: number): Position {
+    return this.#get(symbol, Field.Start);
+  }
+
+  /** End of the name's text, or its start where only a message needs to find it out. */
+  end(symbol: number): Position {
+    return this.#get(symbol, Field.End);
+  }
+
+  /** `Flag` bits. */
+  flags(symbol: number): number {
+    return (this.#get(symbol, Field.Traits) >> FLAGS) & BYTE;
+  }
+
+  addFlags(symbol: number, flags: number): void {
+    this.#set(symbol, Field.Traits, this.#get(symbol, Field.Traits) | (flags << FLAGS));
+  }
+
+  /** A `NetClass`. */
+  netClass(symbol: number): number {
+    return this.#get(symbol, Field.Traits) >> CLASS;
+  }
+
+  setNetClass(symbol: number, netClass: number): void {
+    const others = this.#get(symbol, Field.Traits) & ((1 << CLASS) - 1);
+    this.#set(symbol, Field.Traits, others | (netClass << CLASS));
+  }
+
+  /** Declared left index; 0 for a scalar. */
+  msb(symbol: number): number {
+    return this.#get(symbol, Field.Msb) | 0;
+  }
+
+  /** Declared right index; 0 for a scalar. */
+  lsb(symbol: number): number {
+    return this.#get(symbol, Field.Lsb) | 0;
+  }
+
+  /** Number of bits: of a signal, or of one word of a memory. */
+  width(symbol: number): number {
+    return Math.abs(this.msb(symbol) - this.lsb(symbol)) + 1;
+  }
+
+  #get(symbol: number, field: number): number {
+    return this.#records.get(symbol * RECORD + field);
+  }
+
+  #set(symbol: number, field: number, value: number): void {
+    this.#records.set(symbol * RECORD + field, value);
+  }
+}

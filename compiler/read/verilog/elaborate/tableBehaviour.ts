@@ -1,0 +1,102 @@
+import type { Outcome, PrimitiveTable } from './primitiveTable.js';
+
+/** An edge of an input: `value` is its level afterwards. */
+export interface InputEdge {
+  readonly input: number;
+  readonly value: 0 | 1;
+}
+
+/** What a sequential table does with its state, told for inputs that change one at a time. */
+export class TableBehaviour {
+  readonly inputs: number;
+  /** Inputs that do something: all but the notifiers. */
+  readonly live: readonly number[];
+  readonly #table: PrimitiveTable;
+  #notifiers = 0;
+
+  constructor(table: PrimitiveTable) {
+    this.inputs = table.inputs;
+    this.#table = table;
+    const all = Array.from({ length: table.inputs }, (_, input) => input);
+    for (const input of all) if (this.#isNotifier(input)) this.#notifiers |= 1 << input;
+    this.live = all.filter((input) => ((this.#notifiers >> input) & 1) === 0);
+  }
+
+  /** Combinations of input levels, with the notifiers at 0. */
+  combinations(): number[] {
+    return Array.from({ length: 1 << this.inputs }, (_, levels) => levels).filter(
+      (levels) => (levels & this.#notifiers) === 0,
+    );
+  }
+
+  /** The levels with the notifiers at 0, where tables of functions look them up. */
+  normal(levels: number): number {
+    return levels & ~this.#notifiers;
+  }
+
+  /** The value that the levels alone give whatever the state; undefined if they give none. */
+  forced(levels: number): Outcome | undefined {
+    const fromZero = this.#table.level(levels, 0);
+    const fromOne = this.#table.level(levels, 1);
+    if (fromZero === undefined || fromOne === undefined) return undefined;
+    const value = resolved(fromZero, 0);
+    return value === resolved(fromOne, 1) ? value : undefined;
+  }
+
+  /** The next state when an input has changed and the levels are now these. */
+  next(input: number, levels: number, state: number): Outcome {
+    return resolved(this.#table.event(input, levels, state), state);
+  }
+
+  /** The next state whichever input has changed; undefined if that makes a difference. */
+  steady(levels: number, state: number): Outcome | undefined {
+    const [first, ...others] = this.live.map((input) => this.next(input, levels, state));
+    return others.every((other) => other === first) ? first : undefined;
+  }
+
+  /** The edges that give the state a new value which the levels alone would not. */
+  clocks(): InputEdge[] {
+    const clocks: InputEdge[] = [];
+    for (const input of this.live) {
+      for (const value of [1, 0] as const) {
+        const captures = this.combinations().some(
+          (levels) =>
+            ((levels >> input) & 1) === value &&
+            this.forced(levels) === undefined &&
+            (this.next(input, levels, 0) === '1' || this.next(input, levels, 1) === '0'),
+        );
+        if (captures) clocks.push({ input, value });
+      }
+    }
+    return clocks;
+  }
+
+  /** Whether the levels give the state a value that lasts. */
+  #isStill(levels: number, state: number): boolean {
+    const level = this.#table.level(levels, state);
+    if (level === undefined || this.forced(levels) !== undefined) return true;
+    return resolved(level, state) === resolved('-', state);
+  }
+
+  // Any change makes the output x unless the levels dominate, and nothing else depends on it.
+  #isNotifier(input: number): boolean {
+    const bit = 1 << input;
+    for (let levels = 0; levels < 1 << this.inputs; levels++) {
+      for (const state of [0, 1]) {
+        const level = this.#table.level(levels, state);
+        if (level !== this.#table.level(levels ^ bit, state)) return false;
+        if (level === undefined && this.#table.event(input, levels, state) !== 'x') return false;
+        if (level !== undefined && !this.#isStill(levels, state)) return false;
+        for (let other = 0; other < this.inputs; other++) {
+          if (other === input) continue;
+          const outcome = this.#table.event(other, levels, state);
+          if (outcome !== this.#table.event(other, levels ^ bit, state)) return false;
+        }
+      }
+    }
+    return true;
+  }
+}
+
+const resolved = (outcome: Outcome, state: number): Outcome =>
+  outcome === '-' ? (state === 1 ? '1' : '0') : outcome;

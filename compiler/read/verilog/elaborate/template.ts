@@ -1,0 +1,72 @@
+import type { ModuleNames } from '../../../circuit/hierarchy.js';
+import type { NetId } from '../../../circuit/ids.js';
+import type { NameId } from '../../names.js';
+import type { BlockScope } from './blockScope.js';
+import type { Children } from './children.js';
+import type { Recording } from './recording.js';
+
+/** A port of a module as its instances see it. */
+export interface TemplatePort {
+  /** 0 for a port without name, which only a place in the list reaches. */
+  readonly name: NameId;
+  /** `Flag.Input`, `Flag.Output` or `Flag.Inout`. */
+  readonly direction: number;
+  /** First place of its bits in the boundary. */
+  readonly offset: number;
+  readonly width: number;
+  /** Declared left and right index, where the port is one whole signal. */
+  readonly range: { readonly msb: number; readonly lsb: number } | undefined;
+}
+
+/** Two places of a boundary with one net behind them. */
+export interface Repeat {
+  readonly first: number;
+  readonly second: number;
+}
+
+/** The names of a module or of a block inside it, with the module's nets behind them. */
+export interface BlockNames {
+  /** Name of the block; unused for the module itself, which comes first. */
+  readonly name: string;
+  /** Index of the block around it. */
+  readonly parent: number;
+  readonly names: ModuleNames;
+  /** One net for each bit, in the order of `Signal.offset`. */
+  readonly nets: Uint32Array;
+  /** As long as `nets`, for the nets of the instance that is being stamped. */
+  readonly scratch: Uint32Array;
+}
+
+/**
+ * One module with one set of parameter values, ready to be stamped into the circuit: its logic,
+ * its instances, and what its boundary does.
+ *
+ * Net ids are those of the recording. Where `canonical` is present, `canonical[n]` is the net that
+ * net n is one with; it is never greater than n.
+ */
+export interface Template {
+  readonly name: string;
+  readonly isCell: boolean;
+  readonly recording: Recording;
+  readonly children: Children;
+  readonly canonical: Uint32Array | undefined;
+  /** A 1 for each net that nothing needs; undefined where there is none. */
+  readonly unused: Uint8Array | undefined;
+  readonly ports: readonly TemplatePort[];
+  /** Index into `ports` by name. */
+  readonly portOfName: ReadonlyMap<NameId, number>;
+  /** The nets of all ports, each least significant bit first. */
+  readonly boundary: Uint32Array;
+  /** Per place of the boundary: whether the module drives that net. */
+  readonly drives: Uint8Array;
+  /** Per place of the boundary: whether the module reads that net. */
+  readonly reads: Uint8Array;
+  /** Usually empty; the nets that an instance connects to the two places become one. */
+  readonly repeats: readonly Repeat[];
+  /** Empty for a primitive: its instances make no scope. */
+  readonly blocks: readonly BlockNames[];
+  /** For hierarchical names; undefined for a primitive. */
+  readonly scope: BlockScope | undefined;
+  /** Whether a net has a driver inside the module or its instances. */
+  drivesNet(net: NetId): boolean;
+}

@@ -1,0 +1,79 @@
+import type { NameId } from '../../names.js';
+import type { ModuleSyntax } from '../syntax.js';
+import type { Design } from './design.js';
+
+/** How many names a message lists. */
+const MAX_LISTED = 20;
+
+/**
+ * Chooses the top module: the one that is asked for, or the one that no other instantiates.
+ *
+ * Where several are left, library cells (`celldefine`) do not count, and then modules without
+ * instances of modules do not. Undefined after a report.
+ */
+export function chooseTop(design: Design, wanted: string | undefined): ModuleSyntax | undefined {
+  if (wanted !== undefined) return namedTop(design, wanted);
+  if (design.modules.length === 0) {
+    design.diagnostics.add('top-unknown', 'the files define no module; name a file with one');
+    return undefined;
+  }
+  const { used, parents } = instantiations(design);
+  const roots = design.modules.filter(({ name }) => !used.has(name));
+  const noCells = roots.filter((module) => !module.isCell);
+  const choices = noCells.length === 0 ? roots : noCells;
+  const holders = choices.filter(({ name }) => parents.has(name));
+  const [top, ...others] = holders.length === 1 ? holders : choices;
+  if (top !== undefined && others.length === 0) return top;
+  reportTie(design, choices);
+  return undefined;
+}
+
+function namedTop(design: Design, wanted: string): ModuleSyntax | undefined {
+  const found = design.modules.find(({ name }) => design.text(name) === wanted);
+  if (found !== undefined) return found;
+  const { used } = instantiations(design);
+  const roots = design.modules.filter(({ name }) => !used.has(name));
+  const listed = listOf(design, roots.length > 0 ? roots : design.modules);
+  design.diagnostics.add('top-unknown', `no module is called ${wanted}; there is ${listed}`);
+  return undefined;
+}
+
+/** Names that some other module instantiates, and modules that instantiate any module. */
+function instantiations(design: Design): {
+  readonly used: ReadonlySet<NameId>;
+  readonly parents: ReadonlySet<NameId>;
+} {
+  const used = new Set<NameId>();
+  const parents = new Set<NameId>();
+  for (const { name, instances } of design.modules) {
+    for (let instance = 0; instance < instances.count; instance++) {
+      const child = instances.module(instance);
+      // A module may instantiate itself with other parameters.
+      if (child < 0 || child === name || design.isPrimitive(child)) continue;
+      used.add(child);
+      parents.add(name);
+    }
+  }
+  return { used, parents };
+}
+
+function reportTie(design: Design, choices: readonly ModuleSyntax[]): void {
+  if (choices.length === 0) {
+    const listed = listOf(design, design.modules);
+    const message = `every module is instantiated by another (${listed}); choose one with --top NAME`;
+    design.diagnostics.add('top-ambiguous', message);
+    return;
+  }
+  const message = `no module instantiates ${listOf(design, choices)}; choose one with --top NAME`;
+  const [first, ...others] = choices.slice(0, MAX_LISTED).map((module) => ({
+    message: `${design.text(module.name)} is here`,
+    span: design.wordSpan(module.nameStart),
+  }));
+  design.diagnostics.add('top-ambiguous', message, first!.span, others);
+}
+
+function listOf(design: Design, modules: readonly ModuleSyntax[]): string {
+  const names = modules.slice(0, MAX_LISTED).map(({ name }) => design.text(name));
+  const more = modules.length - names.length;
+  return names.join(', ') + (more > 0 ? ` and ${more} more` : '');
+}

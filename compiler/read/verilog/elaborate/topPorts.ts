@@ -1,0 +1,86 @@
+import type { CircuitBuilder } from '../../../circuit/builder.js';
+import { type NetId, netId } from '../../../circuit/ids.js';
+import type { Span } from '../../../diagnostics/source.js';
+import type { ModuleSyntax } from '../syntax.js';
+import type { Design } from './design.js';
+import { Flag } from './symbols.js';
+import type { Template, TemplatePort } from './template.js';
+
+/** Reports what keeps a module from being the top: how it treats the nets of its ports. */
+export function checkTopPorts(design: Design, module: ModuleSyntax, top: Template): void {
+  for (const [index, port] of top.ports.entries()) {
+    const { start, end } = module.ports[index] ?? module;
+    const span = declaredAt(design, top, port) ?? design.sources.span(start, end);
+    const name = design.text(port.name);
+    if (port.name === 0 && port.width > 0) {
+      const message = `port ${index + 1} of the top module has no name; give it one: .name(…)`;
+      design.diagnostics.add('not-supported', message, span);
+    } else if (port.direction === Flag.Output) {
+      const open = bitsOf(port).filter((place) => top.drives[place] === 0);
+      if (open.length > 0) design.undriven.add(openOutput(name, port, open.length), span);
+    } else if (bitsOf(port).some((place) => top.drives[place] === 1)) {
+      const isInput = port.direction === Flag.Input;
+      const message = isInput
+        ? `input ${name} of the top module is also driven inside; leave one of the two drivers`
+        : `inout ${name} of the top module is driven inside, which is not supported; ` +
+          'split it into an input and an output';
+      design.diagnostics.add(isInput ? 'net-multiply-driven' : 'not-supported', message, span);
+    }
+  }
+  for (const { first, second } of top.repeats) checkRepeat(design, module, top, first, second);
+}
+
+/** Gives the circuit the ports of its top module; an inout that nothing drives is an input. */
+export function addTopPorts(
+  builder: CircuitBuilder,
+  design: Design,
+  top: Template,
+  boundary: Uint32Array,
+): void {
+  const positions = top.ports.map((port) => declaredAt(design, top, port));
+  for (const [index, port] of top.ports.entries()) {
+    if (port.width === 0) continue;
+    const nets: NetId[] = bitsOf(port).map((place) => netId(boundary[place]!));
+    const name = design.text(port.name);
+    const range = port.range ?? (port.width > 1 ? { msb: port.width - 1, lsb: 0 } : undefined);
+    const span = positions[index];
+    if (span !== undefined) builder.at(design.sources.sources.indexOf(span.source), span.start);
+    if (port.direction === Flag.Output) builder.output(name, nets, range);
+    else builder.input(name, nets, range);
+  }
+}
+
+function bitsOf({ offset, width }: TemplatePort): number[] {
+  return Array.from({ length: width }, (_, bit) => offset + bit);
+}
+
+function openOutput(name: string, { width }: TemplatePort, open: number): string {
+  return open === width
+    ? `output ${name} of the top module has no driver`
+    : `${open} of the ${width} bits of output ${name} of the top module have no driver`;
+}
+
+/** Where the signal of a port is declared, if the port has the signal's name. */
+function declaredAt(design: Design, { scope }: Template, { name }: TemplatePort): Span | undefined {
+  const symbol = scope?.symbols.find(name) ?? -1;
+  if (scope === undefined || symbol < 0) return undefined;
+  return design.sources.span(scope.symbols.start(symbol), scope.symbols.end(symbol));
+}
+
+/** Two inputs that are one net inside would both drive it. */
+function checkRepeat(
+  design: Design,
+  module: ModuleSyntax,
+  top: Template,
+  first: number,
+  second: number,
+): void {
+  const portAt = (place: number): number =>
+    top.ports.findIndex(({ offset, width }) => offset <= place && place < offset + width);
+  const ports = [portAt(first), portAt(second)];
+  if (ports.some((port) => top.ports[port]!.direction === Flag.Output)) return;
+  const [a, b] = ports.map((port) => design.text(top.ports[port]!.name));
+  const { start, end } = module.ports[ports[1]!] ?? module;
+  const message = `the ports ${a} and ${b} of the top module are one net inside; remove one of them`;
+  design.diagnostics.add('net-multiply-driven', message, design.sources.span(start, end));
+}

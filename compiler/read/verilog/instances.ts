@@ -1,0 +1,147 @@
+import { GrowableUint8, GrowableUint32 } from '../../circuit/growable.js';
+import type { Position } from '../../diagnostics/sourceMap.js';
+import type { NameId } from '../names.js';
+import type { Expression, RangeSyntax, Strength } from './syntax.js';
+
+/** The built-in gates and switches of IEEE 1364-2005, clause 7, in a fixed order. */
+export const builtinGates = [
+  'and',
+  'nand',
+  'or',
+  'nor',
+  'xor',
+  'xnor',
+  'buf',
+  'not',
+  'bufif0',
+  'bufif1',
+  'notif0',
+  'notif1',
+  'nmos',
+  'pmos',
+  'cmos',
+  'rnmos',
+  'rpmos',
+  'rcmos',
+  'tran',
+  'rtran',
+  'tranif0',
+  'tranif1',
+  'rtranif0',
+  'rtranif1',
+  'pullup',
+  'pulldown',
+] as const;
+
+/** How a connection is stored: by far the most are a whole signal or one bit of one. */
+export const ConnectionKind = {
+  /** `.a()` or an empty place. */
+  Empty: 0,
+  /** A plain name: `first` is its NameId. */
+  Name: 1,
+  /** A name with a literal index: `first` is the NameId, `second` the index. */
+  Bit: 2,
+  /** Anything else: `first` is an index into `expressions`. */
+  Expression: 3,
+} as const;
+
+/** Value of `connectionPort` for a positional connection. */
+export const POSITIONAL = 0xffffffff;
+
+/** What only few instances have. */
+export interface InstanceExtras {
+  /** Array of instances: `u [3:0] (...)`. */
+  readonly range: RangeSyntax | undefined;
+  /** `#(...)` of a module instance; `name` 0 for positional values. */
+  readonly parameters: readonly { readonly name: NameId; readonly value: Expression }[];
+  readonly strength: Strength | undefined;
+}
+
+/**
+ * All instances of a module in columns, so that a million of them cost some tens of bytes each.
+ *
+ * The connections of instance i are `connectionStart(i) … connectionStart(i + 1) - 1`.
+ */
+export class InstanceTable {
+  readonly #module = new GrowableUint32();
+  readonly #name = new GrowableUint32();
+  readonly #position = new GrowableUint32();
+  readonly #connections = new GrowableUint32();
+  readonly #port = new GrowableUint32();
+  readonly #kind = new GrowableUint8();
+  readonly #first = new GrowableUint32();
+  readonly #second = new GrowableUint32();
+  readonly #connectionPosition = new GrowableUint32();
+  readonly #extras = new Map<number, InstanceExtras>();
+  readonly expressions: Expression[] = [];
+
+  get count(): number {
+    return this.#module.length;
+  }
+
+  /**
+   * Begins an instance; its connections follow by `connect`. `module` is the NameId of a module or
+   * primitive, or `-1 - g` for `builtinGates[g]`. `name` is 0 where the instance has none.
+   */
+  begin(module: number, name: NameId, position: Position, extras?: InstanceExtras): number {
+    if (extras !== undefined) this.#extras.set(this.#module.length, extras);
+    this.#module.push(module >>> 0);
+    this.#name.push(name);
+    this.#position.push(position);
+    this.#connections.push(this.#kind.length);
+    return this.#module.length - 1;
+  }
+
+  /** Adds a connection to the instance begun last. `port` is a NameId or `POSITIONAL`. */
+  connect(port: number, kind: number, first: number, second: number, position: Position): void {
+    this.#port.push(port);
+    this.#kind.push(kind);
+    this.#first.push(first);
+    this.#second.push(second);
+    this.#connectionPosition.push(position);
+  }
+
+  /** NameId of the module or primitive, or `-1 - g` for a built-in gate. */
+  module(instance: number): number {
+    return this.#module.get(instance) | 0;
+  }
+
+  name(instance: number): NameId {
+    return this.#name.get(instance);
+  }
+
+  /** Where the instance's text starts. */
+  position(instance: number): Position {
+    return this.#position.get(instance);
+  }
+
+  extras(instance: number): InstanceExtras | undefined {
+    return this.#extras.get(instance);
+  }
+
+  connectionStart(instance: number): number {
+    return instance < this.count ? this.#connections.get(instance) : this.#kind.length;
+  }
+
+  /** NameId of the port, or `POSITIONAL`. */
+  connectionPort(connection: number): number {
+    return this.#port.get(connection);
+  }
+
+  /** A `ConnectionKind`. */
+  connectionKind(connection: number): number {
+    return this.#kind.get(connection);
+  }
+
+  connectionFirst(connection: number): number {
+    return this.#first.get(connection);
+  }
+
+  connectionSecond(connection: number): number {
+    return this.#second.get(connection);
+  }
+
+  connectionPosition(connection: number): Position {
+    return this.#connectionPosition.get(connection);
+  }
+}

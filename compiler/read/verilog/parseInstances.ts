@@ -1,0 +1,215 @@
+import type { Position } from '../../diagnostics/sourceMap.js';
+import type { NameId } from '../names.js';
+import { ConnectionKind, type InstanceExtras, POSITIONAL } from './instances.js';
+import { FIRST_GATE } from './keywords.js';
+import { isStrength, parseParameterValues, parseStrengthFrom, skipDelay } from './parseDelays.js';
+import {
+  parseExpression,
+  parseNameFrom,
+  parseOptionalRange,
+  parseRest,
+  parseSelectFrom,
+} from './parseExpression.js';
+import { parseNumberFrom } from './parseNumber.js';
+import type { Parser } from './parser.js';
+import type { Expression, Item, NameExpression, Strength } from './syntax.js';
+import { Token } from './tokens.js';
+
+/** name [ strength ] [ parameters ] instance { `,` instance } `;` (annex A.4.1 and A.5.4) */
+export function parseModuleInstances(p: Parser, items: Item[]): void {
+  const { tokens } = p;
+  const { start, value: module } = tokens;
+  p.beginItem(module);
+  tokens.next();
+  if (tokens.kind === Token.LeftParen) {
+    tokens.next();
+    if (!isStrength(p)) {
+      parseInstancesFrom(p, items, module, start, undefined);
+      return;
+    }
+    const strength = parseStrengthFrom(p);
+    const parameters = p.is(Token.Hash) ? parseParameterValues(p) : [];
+    parseInstances(p, items, module, start, { range: undefined, parameters, strength });
+  } else if (tokens.kind === Token.Hash) {
+    const parameters = parseParameterValues(p);
+    parseInstances(p, items, module, start, { range: undefined, parameters, strength: undefined });
+  } else {
+    parseInstances(p, items, module, start, undefined);
+  }
+}
+
+/** gate [ strength ] [ delay ] instance { `,` instance } `;` (annex A.3.1) */
+export function parseGateInstances(p: Parser, items: Item[]): void {
+  const { tokens } = p;
+  const { start } = tokens;
+  const module = -1 - (tokens.kind - FIRST_GATE);
+  tokens.next();
+  let strength: Strength | undefined;
+  if (tokens.kind === Token.LeftParen) {
+    tokens.next();
+    if (!isStrength(p)) {
+      parseInstancesFrom(p, items, module, start, undefined);
+      return;
+    }
+    strength = parseStrengthFrom(p);
+  }
+  skipDelay(p);
+  const extras = strength && { range: undefined, parameters: [], strength };
+  parseInstances(p, items, module, start, extras);
+}
+
+function parseInstances(
+  p: Parser,
+  items: Item[],
+  module: number,
+  start: Position,
+  extras: InstanceExtras | undefined,
+): void {
+  const { tokens } = p;
+  let position = start;
+  for (;;) {
+    let name: NameId = 0;
+    let ownExtras = extras;
+    if (tokens.kind === Token.Identifier) {
+      name = tokens.value;
+      tokens.next();
+      if (tokens.kind === Token.LeftBracket) ownExtras = withRange(p, extras);
+    }
+    if (tokens.kind !== Token.LeftParen) p.fail(afterInstanceName(name));
+    tokens.next();
+    parseOneInstance(p, items, module, name, position, ownExtras);
+    if (tokens.kind !== Token.Comma) break;
+    tokens.next();
+    position = tokens.start;
+  }
+  p.expect(Token.Semicolon);
+}
+
+/** An instance without a name, whose `(` has been read, and what follows it. */
+function parseInstancesFrom(
+  p: Parser,
+  items: Item[],
+  module: number,
+  start: Position,
+  extras: InstanceExtras | undefined,
+): void {
+  parseOneInstance(p, items, module, 0, start, extras);
+  if (p.accept(Token.Comma)) parseInstances(p, items, module, p.tokens.start, extras);
+  else p.expect(Token.Semicolon);
+}
+
+function parseOneInstance(
+  p: Parser,
+  items: Item[],
+  module: number,
+  name: NameId,
+  position: Position,
+  extras: InstanceExtras | undefined,
+): void {
+  const instance = p.instances.begin(module, name, position, extras);
+  parseConnections(p);
+  const last = items[items.length - 1];
+  if (last?.kind === 'instances' && last.first + last.count === instance) last.count++;
+  else items.push({ kind: 'instances', first: instance, count: 1 });
+}
+
+function withRange(p: Parser, extras: InstanceExtras | undefined): InstanceExtras {
+  const range = parseOptionalRange(p);
+  return { parameters: [], strength: undefined, ...extras, range };
+}
+
+function afterInstanceName(name: NameId): string {
+  return name === 0 ? 'the name of an instance' : "'(' and the connections of the instance";
+}
+
+/** connections `)`: all named or all by position */
+function parseConnections(p: Parser): void {
+  const { tokens } = p;
+  if (tokens.kind === Token.RightParen) {
+    tokens.next();
+    return;
+  }
+  for (;;) {
+    if (tokens.kind === Token.Dot) parseNamedConnection(p);
+    else if (tokens.kind === Token.Comma || tokens.kind === Token.RightParen) {
+      p.instances.connect(POSITIONAL, ConnectionKind.Empty, 0, 0, tokens.start);
+    } else parseConnection(p, POSITIONAL);
+    if (tokens.kind !== Token.Comma) break;
+    tokens.next();
+  }
+  p.expect(Token.RightParen, "',' or ')'");
+}
+
+/** `.` port `(` [ expression ] `)` */
+function parseNamedConnection(p: Parser): void {
+  const { tokens } = p;
+  const { start } = tokens;
+  tokens.next();
+  if (tokens.kind !== Token.Identifier) p.fail("the name of a port after '.'");
+  const port = tokens.value;
+  tokens.next();
+  if (tokens.kind !== Token.LeftParen) p.fail("'(' and the connection of the port");
+  tokens.next();
+  if (tokens.kind === Token.RightParen) {
+    p.instances.connect(port, ConnectionKind.Empty, 0, 0, start);
+  } else parseConnection(p, port);
+  if (tokens.kind !== Token.RightParen) p.fail("')'");
+  tokens.next();
+}
+
+// A whole signal or a bit of one goes straight into the columns: no expression is made for them.
+function parseConnection(p: Parser, port: number): void {
+  const { tokens, instances } = p;
+  const { start } = tokens;
+  if (tokens.kind !== Token.Identifier) {
+    connectExpression(p, port, parseExpression(p), start);
+    return;
+  }
+  const { value: name, end } = tokens;
+  tokens.next();
+  const { kind } = tokens;
+  if (kind === Token.RightParen || kind === Token.Comma) {
+    instances.connect(port, ConnectionKind.Name, name, 0, start);
+    return;
+  }
+  const signal: NameExpression = { kind: 'name', path: [name], start, end };
+  if (kind !== Token.LeftBracket) {
+    connectExpression(p, port, parseRest(p, parseNameFrom(p, signal)), start);
+    return;
+  }
+  parseBit(p, port, signal);
+}
+
+/** `[` index `]`, of which a plain number in full makes a bit connection. */
+function parseBit(p: Parser, port: number, signal: NameExpression): void {
+  const { tokens } = p;
+  const { start } = signal;
+  tokens.next();
+  let index: Expression;
+  if (tokens.kind === Token.Number && tokens.value >= 0) {
+    const { value, start: indexStart, end: indexEnd } = tokens;
+    tokens.next();
+    if (tokens.kind === Token.RightBracket) {
+      tokens.next();
+      const { kind, lastEnd } = tokens;
+      if (kind === Token.RightParen || kind === Token.Comma) {
+        p.instances.connect(port, ConnectionKind.Bit, signal.path[0]!, value, start);
+        return;
+      }
+      index = parseNumberFrom(p, value, indexStart, indexEnd);
+      const bit = { kind: 'select', base: signal, index, start, end: lastEnd } as const;
+      connectExpression(p, port, parseRest(p, parseNameFrom(p, bit)), start);
+      return;
+    }
+    index = parseRest(p, parseNumberFrom(p, value, indexStart, indexEnd));
+  } else index = parseExpression(p);
+  const selected = parseSelectFrom(p, signal, index);
+  const operand = selected.kind === 'part' ? selected : parseNameFrom(p, selected);
+  connectExpression(p, port, parseRest(p, operand), start);
+}
+
+function connectExpression(p: Parser, port: number, value: Expression, start: Position): void {
+  const { instances } = p;
+  instances.connect(port, ConnectionKind.Expression, instances.expressions.length, 0, start);
+  instances.expressions.push(value);
+}

@@ -1,0 +1,347 @@
+import type { Position } from '../../diagnostics/sourceMap.js';
+import { EMPTY_HASH, hashStep, type NameTable } from '../names.js';
+import { Char, CharClass, charClass, isNamePart, isSpace } from './characters.js';
+import { decode } from './decode.js';
+import { currentVersion, reservedWords } from './keywords.js';
+import { baseOfLetter, SIGNED_BASE } from './numbers.js';
+import { scanOperator, singleTokens } from './operators.js';
+import {
+  endOfAttribute,
+  endOfBlockComment,
+  endOfLine,
+  endOfName,
+  endOfReal,
+  endOfStringText,
+} from './textEnds.js';
+import { Token } from './tokens.js';
+
+/** Who gives the scanner its texts and hears of problems. */
+export interface ScannerClient {
+  /** Called at a backtick: reads a directive or macro use, and moves the scanner past it. */
+  directive(): void;
+  /** Called at the end of a text: goes on in the text around it, or returns false. */
+  endOfText(): boolean;
+  /** Reports text that is no token. */
+  problem(message: string, start: Position, end: Position): void;
+}
+
+/**
+ * Tokens of Verilog (IEEE 1364-2005, clause 3) from bytes.
+ *
+ * The current token is in the fields, so that no object is made for it. White space, comments and
+ * attributes are skipped; directives are left to the client.
+ */
+export class Scanner {
+  /** A `Token` or `Keyword`. */
+  kind: number = Token.EndOfInput;
+  /**
+   * Of an identifier or system name: its NameId (without the backslash of an escaped one). Of a
+   * Number: its value, or -1 from 2^31 on. Of a Based: the base, plus `SIGNED_BASE` if signed. Of
+   * a Symbol: its character code.
+   */
+  value = 0;
+  /** Where the token starts and ends; of one that a macro yields, where the macro is used. */
+  start: Position = 0;
+  end: Position = 0;
+  /** Where the token before this one ends. */
+  lastEnd: Position = 0;
+  /** Digits of a number or inside of a string, in `text`, until the next token is read. */
+  textStart = 0;
+  textEnd = 0;
+
+  /** The text being read, and the offset of what follows the current token. */
+  text: Uint8Array = new Uint8Array(0);
+  at = 0;
+  /** Position of the text's first byte. */
+  base: Position = 0;
+  /** Start and end of all tokens of a macro's text; -1 in a file. */
+  fixedStart: Position = -1;
+  fixedEnd: Position = -1;
+
+  /** Which names are keywords: see `reservedWords`. */
+  reserved: Uint8Array = reservedWords(currentVersion)!;
+
+  readonly #names: NameTable;
+  readonly #client: ScannerClient;
+  #caseAttributes: string[] = [];
+  /** A text whose rest has no `*)`: it is not searched for each of many a `(*`. */
+  #withoutAttributeEnd: Uint8Array | undefined;
+
+  constructor(names: NameTable, client: ScannerClient) {
+    this.#names = names;
+    this.#client = client;
+  }
+
+  /** Reads the next token. At the end of the input it stays at `EndOfInput`. */
+  next(): void {
+    this.lastEnd = this.end;
+    do this.#scan();
+    while (this.kind === Token.Nothing);
+    this.end = this.fixedStart < 0 ? this.base + this.at : this.fixedEnd;
+  }
+
+  #scan(): void {
+    const first = this.#skip();
+    const start = this.at;
+    this.start = this.fixedStart < 0 ? this.base + start : this.fixedStart;
+    if (first < 0) {
+      this.kind = Token.EndOfInput;
+      return;
+    }
+    const single = singleTokens[first]!;
+    if (single !== 0) {
+      this.kind = single;
+      this.at = start + 1;
+    } else if (charClass[first] === CharClass.Letter) {
+      this.#identifier(start);
+    } else if (charClass[first] === CharClass.Digit) {
+      this.#number(start);
+    } else {
+      this.#other(first, start);
+    }
+  }
+
+  /**
+   * Reads the next token inside the table of a primitive: a `Symbol` for any character but a
+   * letter that begins `endtable`.
+   */
+  nextSymbol(): void {
+    this.lastEnd = this.end;
+    const first = this.#skip(false);
+    this.start = this.position(this.at);
+    if (first < 0) this.kind = Token.EndOfInput;
+    else if (first === Char.LowerE) this.#identifier(this.at);
+    else {
+      this.kind = Token.Symbol;
+      this.value = first;
+      this.at++;
+    }
+    this.end = this.fixedStart < 0 ? this.base + this.at : this.fixedEnd;
+  }
+
+  /** The position of an offset in the current text. */
+  position(offset: number): Position {
+    return this.fixedStart < 0 ? this.base + offset : this.fixedStart;
+  }
+
+  /** The position of the end, at an offset, of something in the current text. */
+  endPosition(offset: number): Position {
+    return this.fixedStart < 0 ? this.base + offset : this.fixedEnd;
+  }
+
+  /** The case attributes skipped since the last call: `full_case`, `parallel_case`. */
+  takeCaseAttributes(): readonly string[] {
+    const attributes = this.#caseAttributes;
+    if (attributes.length > 0) this.#caseAttributes = [];
+    return attributes;
+  }
+
+  /** Goes past white space and comments, over line ends only if asked; returns the byte there. */
+  skipBlank(overLines: boolean): number {
+    const text = this.text;
+    for (;;) {
+      const c = text[this.at];
+      if (c === undefined) return -1;
+      if (c === Char.Slash && this.#skipComment()) continue;
+      if (!isSpace(c) || (c === Char.LineFeed && !overLines)) return c;
+      this.at++;
+    }
+  }
+
+  /** Moves to the first byte that is no white space, comment or attribute; -1 at the end. */
+  #skip(withAttributes = true): number {
+    for (;;) {
+      const text = this.text;
+      const limit = text.length;
+      let at = this.at;
+      let c = 0;
+      while (at < limit) {
+        c = text[at]!;
+        if (charClass[c] !== CharClass.Space) break;
+        at++;
+      }
+      this.at = at;
+      if (at >= limit) {
+        if (!this.#client.endOfText()) return -1;
+      } else if (c === Char.Backtick) {
+        this.#client.directive();
+      } else if (c === Char.Slash) {
+        if (!this.#skipComment()) return c;
+      } else if (c !== Char.LeftParen || !withAttributes || !this.#skipAttribute()) {
+        return c;
+      }
+    }
+  }
+
+  #skipComment(): boolean {
+    const text = this.text;
+    const start = this.at;
+    if (text[start + 1] === Char.Slash) {
+      this.at = endOfLine(text, start);
+      return true;
+    }
+    if (text[start + 1] !== Char.Star) return false;
+    const end = endOfBlockComment(text, start);
+    if (end < 0) this.#problem("the comment has no end '*/'", start, start + 2);
+    this.at = end < 0 ? text.length : end;
+    return true;
+  }
+
+  #skipAttribute(): boolean {
+    const text = this.text;
+    const start = this.at;
+    if (text[start + 1] !== Char.Star || text === this.#withoutAttributeEnd) return false;
+    let at = start + 2;
+    while (isSpace(text[at])) at++;
+    // `(*)` after an @ is an event list.
+    if (text[at] === Char.RightParen) return false;
+    const end = endOfAttribute(text, at);
+    if (end < 0) {
+      this.#withoutAttributeEnd = text;
+      this.#problem("the attribute has no end '*)'", start, start + 2);
+      return false;
+    }
+    const hasUnderscore = text.subarray(start, end).includes(Char.Underscore);
+    if (hasUnderscore) this.#noteAttribute(decode(text, start, end));
+    this.at = end;
+    return true;
+  }
+
+  #noteAttribute(content: string): void {
+    for (const name of ['full_case', 'parallel_case']) {
+      const known = this.#caseAttributes.includes(name);
+      if (!known && content.includes(name)) this.#caseAttributes.push(name);
+    }
+  }
+
+  #identifier(start: number): void {
+    const text = this.text;
+    const limit = text.length;
+    let at = start;
+    let hash = EMPTY_HASH;
+    while (at < limit) {
+      const c = text[at]!;
+      if (charClass[c]! < CharClass.Letter) break;
+      hash = hashStep(hash, c);
+      at++;
+    }
+    this.at = at;
+    const id = this.#names.internHashed(text, start, at, hash);
+    this.value = id;
+    this.kind =
+      id < this.reserved.length && this.reserved[id] === 1
+        ? Token.FirstKeyword - 1 + id
+        : Token.Identifier;
+  }
+
+  #number(start: number): void {
+    const text = this.text;
+    let at = start;
+    let value = 0;
+    let c = text[at];
+    while (c !== undefined && (charClass[c] === CharClass.Digit || c === Char.Underscore)) {
+      if (c !== Char.Underscore) value = value < 0x80000000 ? value * 10 + (c - Char.Zero) : value;
+      c = text[++at];
+    }
+    this.kind = Token.Number;
+    this.value = value < 0x80000000 ? value : -1;
+    if (c === Char.Dot || c === Char.LowerE || c === Char.UpperE) {
+      const end = endOfReal(text, at);
+      if (end > at) {
+        this.kind = Token.Real;
+        at = end;
+      }
+    }
+    this.textStart = start;
+    this.textEnd = at;
+    this.at = at;
+  }
+
+  #other(first: number, start: number): void {
+    this.at = start + 1;
+    switch (first) {
+      case Char.Backslash:
+        this.#escaped(start);
+        return;
+      case Char.Quote:
+        this.#string(start);
+        return;
+      case Char.Apostrophe:
+        this.#based(start);
+        return;
+      case Char.Dollar:
+        if (!isNamePart(this.text[this.at])) break;
+        this.at = endOfName(this.text, this.at);
+        this.kind = Token.SystemName;
+        this.value = this.#names.intern(this.text, start, this.at);
+        return;
+    }
+    if (scanOperator(this, first)) return;
+    // A stretch of stray bytes, such as letters beyond ASCII, gives one message.
+    while (this.text[this.at]! > 127) this.at++;
+    const stray = decode(this.text, start, this.at);
+    this.#problem(`'${stray}' has no meaning here; remove it`, start, this.at);
+    this.kind = Token.Nothing;
+  }
+
+  #escaped(start: number): void {
+    const text = this.text;
+    let at = start + 1;
+    while (at < text.length && !isSpace(text[at])) at++;
+    this.at = at;
+    if (at === start + 1) {
+      this.#problem("a name is missing after '\\'", start, at);
+      this.kind = Token.Nothing;
+      return;
+    }
+    this.kind = Token.Identifier;
+    this.value = this.#names.intern(text, start + 1, at);
+  }
+
+  #string(start: number): void {
+    const end = endOfStringText(this.text, start);
+    const isWhole = this.text[end] === Char.Quote;
+    this.kind = Token.String;
+    this.textStart = start + 1;
+    this.textEnd = end;
+    this.at = isWhole ? end + 1 : end;
+    if (!isWhole) this.#problem("the string has no end '\"' on its line", start, end);
+  }
+
+  /** `'` { `s` } base digits. White space, or the use of a macro, may come before the digits. */
+  #based(start: number): void {
+    let value = 0;
+    let letter = this.text[this.at];
+    if (letter === Char.LowerS || letter === Char.UpperS) {
+      value = SIGNED_BASE;
+      letter = this.text[++this.at];
+    }
+    const base = baseOfLetter(letter);
+    if (base === 0) {
+      this.at = start + 1;
+      this.#problem(
+        "after ' a base b, o, d or h and digits are expected, such as in 4'b0101",
+        start,
+        this.at,
+      );
+      this.kind = Token.Nothing;
+      return;
+    }
+    this.at++;
+    const startPosition = this.start;
+    const first = this.#skip();
+    this.start = startPosition;
+    this.kind = Token.Based;
+    this.value = value + base;
+    this.textStart = this.at;
+    if (first === Char.Question || isNamePart(first)) {
+      while (isNamePart(this.text[this.at]) || this.text[this.at] === Char.Question) this.at++;
+    }
+    this.textEnd = this.at;
+  }
+
+  #problem(message: string, start: number, end: number): void {
+    const endPosition = this.fixedStart < 0 ? this.base + end : this.fixedEnd;
+    this.#client.problem(message, this.position(start), endPosition);
+  }
+}

@@ -1,0 +1,101 @@
+import type { LatchPins, RegisterPins } from '../../circuit/builder.js';
+import type { GateKind } from '../../circuit/gates.js';
+import type { NetId } from '../../circuit/ids.js';
+import type { Diagnostics } from '../../diagnostics/diagnostics.js';
+import type { SourceMap } from '../../diagnostics/sourceMap.js';
+import type { NameId, NameTable } from '../names.js';
+import type { RoutineItem } from './syntax.js';
+
+/** A constant of known width: bits in `value`, x and z bits set in `unknown`. */
+export interface Constant {
+  readonly width: number;
+  readonly signed: boolean;
+  /** 0 ≤ value < 2^width, also for signed constants (two's complement). */
+  readonly value: bigint;
+  readonly unknown: bigint;
+}
+
+/** What a name means inside one instance of a module. */
+export type Binding =
+  | SignalBinding
+  | MemoryBinding
+  | { readonly kind: 'parameter'; readonly value: Constant }
+  | { readonly kind: 'routine'; readonly syntax: RoutineItem; readonly scope: Scope };
+
+/** A net or variable with its nets; `nets[0]` is the rightmost bit. */
+export interface SignalBinding {
+  readonly kind: 'signal';
+  readonly name: NameId;
+  readonly msb: number;
+  readonly lsb: number;
+  readonly isVector: boolean;
+  readonly signed: boolean;
+  /** Declared `reg`, `integer` or `time`: assigned by `always` and `initial`. */
+  readonly isVariable: boolean;
+  readonly nets: readonly NetId[];
+}
+
+/** An array of words: `reg [7:0] m [0:15]`, one entry of `words` per address from `low` on. */
+export interface MemoryBinding {
+  readonly kind: 'memory';
+  readonly name: NameId;
+  readonly msb: number;
+  readonly lsb: number;
+  readonly signed: boolean;
+  readonly low: number;
+  readonly high: number;
+  readonly words: readonly (readonly NetId[])[];
+}
+
+/**
+ * What logic is built into: a `CircuitBuilder`, or the recording of one module that is stamped
+ * into the circuit for each of its instances.
+ *
+ * Nets may be used before they are driven. Net ids are of the one sink alone. A net that belongs
+ * to a port counts as undriven while only the outside drives it.
+ */
+export interface GateSink {
+  /** Sets the origin of what is built next: index of a source in the map, byte offset in it. */
+  at(sourceIndex: number, offset: number): void;
+  /** A new net without driver. */
+  net(): NetId;
+  isDriven(net: NetId): boolean;
+  /**
+   * The `GateKind` that drives a net so far, or -1. Also -1 for a constant on a declared net: it
+   * may get further drivers.
+   */
+  kindOf(net: NetId): number;
+  /** Drives a net by a gate or a constant; a second driver of a net is no error at this place. */
+  drive(net: NetId, kind: GateKind, fanin: readonly NetId[]): void;
+  /** A new net driven by a gate; one and the same net for each constant is allowed. */
+  gate(kind: GateKind, fanin: readonly NetId[]): NetId;
+  register(pins: RegisterPins): void;
+  latch(pins: LatchPins): void;
+}
+
+/** What all of one module's elaboration shares. */
+export interface Elaboration {
+  readonly builder: GateSink;
+  readonly names: NameTable;
+  readonly sources: SourceMap;
+  readonly diagnostics: Diagnostics;
+  /** Value given to a net at power-up by `initial`, 0 or 1, collected before registers are made. */
+  readonly initialValues: Map<NetId, 0 | 1>;
+}
+
+/** One instance of a module, or a generate or named block inside one. */
+export interface Scope {
+  readonly shared: Elaboration;
+  /**
+   * The meaning of a name seen from here, outer blocks included; undefined if unknown. A path leads
+   * into blocks and instances; an element of a generate loop or of an array of instances stands in
+   * it under a name of its own, the text `g[2]` with the index in decimal (`names.internText`).
+   */
+  resolve(path: readonly NameId[]): Binding | undefined;
+  /**
+   * The scope of a named block of statements that stands in an `always` or `initial` of this
+   * scope, or in another such block; its declarations are made. Undefined if there is none, and
+   * absent where a scope cannot have any (a function's).
+   */
+  block?(name: NameId): Scope | undefined;
+}

@@ -1,0 +1,70 @@
+import { isGate } from '../circuit/gates.js';
+import type { Design } from '../compile.js';
+import { checkAgreement } from './benchAgreement.js';
+import { type Contestant, interpreters } from './benchEngines.js';
+import { nativeContestant } from './benchNative.js';
+import type { BenchOptions } from './benchOptions.js';
+import type { BenchEngine, BenchResult, EngineFigures, Timing } from './benchResult.js';
+import { fiveDigits } from './benchResult.js';
+import { BenchRows } from './benchRows.js';
+import { timeAlternately } from './benchTiming.js';
+
+/**
+ * Measures the engines on one design, all on the same rows of uniform random bits, each from the
+ * power-up state `zero`, each reading a stimulus row and writing a response row a cycle.
+ *
+ * Throws `EngineDisagreement` where two responses differ, and what the engines throw. The
+ * generated code runs in one process with the interpreters, C in one of its own.
+ */
+export async function benchDesign(
+  design: Design,
+  options: BenchOptions = {},
+): Promise<BenchResult> {
+  const { seconds = 1, rounds = 7, onProgress = () => {} } = options;
+  const { circuit } = design;
+  const gates = circuit.kind.reduce((count, kind) => count + Number(isGate(kind)), 0);
+  const rows = new BenchRows(design);
+  onProgress('compiling to WebAssembly');
+  const contestants: Contestant[] = await interpreters(design, rows);
+  const native = await nativeContestant(design, rows, gates, options);
+  const notes: string[] = [];
+  if ('note' in native) notes.push(native.note);
+  else {
+    contestants.push(native);
+    notes.push(`native is C compiled by ${native.compiler} -O2`);
+  }
+  try {
+    onProgress('comparing the responses');
+    const agreement = await checkAgreement(design.layout, contestants, rows.count);
+    const timings = await timeAlternately(contestants, { seconds, rounds, onProgress });
+    return { ...resultOf(design, gates, contestants, timings), agreement, rounds, notes };
+  } finally {
+    if ('close' in native) native.close();
+  }
+}
+
+function resultOf(
+  { circuit }: Design,
+  gates: number,
+  contestants: readonly Contestant[],
+  timings: readonly Timing[],
+): Omit<BenchResult, 'agreement' | 'rounds' | 'notes'> {
+  const figures = contestants.map(({ name, buildMs }, i): [BenchEngine, EngineFigures] => [
+    name,
+    { ...timings[i]!, buildMs: fiveDigits(buildMs) },
+  ]);
+  const engines = Object.fromEntries(figures) as Record<BenchEngine, EngineFigures>;
+  const ratios = Object.fromEntries(
+    figures
+      .filter(([name]) => name !== 'wasm')
+      .map(([name, { nsPerCycle }]) => [name, fiveDigits(nsPerCycle / engines.wasm.nsPerCycle)]),
+  );
+  return {
+    circuit: circuit.name,
+    gates,
+    registers: circuit.registers.count,
+    cycles: engines.wasm.cycles,
+    engines,
+    ratios,
+  };
+}

@@ -1,0 +1,69 @@
+import type { Departure } from '../../runtime/node/index.js';
+import type { PowerUp } from '../circuit/powerUp.js';
+import type { EngineName } from '../engines.js';
+
+/** What a run came to; printed as it stands by `run --json`. */
+export interface RunSummary {
+  readonly cycles: number;
+  readonly seconds: number;
+  readonly cyclesPerSecond: number;
+  readonly engine: EngineName;
+  readonly powerUp: PowerUp;
+  /** CRC-64 of the response, sixteen hexadecimal digits, where asked for. */
+  readonly signature?: string;
+  /** The first departure from the expectation. */
+  readonly mismatch?: Mismatch;
+  /** How many departures there were, where all were asked for. */
+  readonly mismatches?: number;
+  /** Set where the run ended before its last cycle. */
+  readonly stopped?: { readonly cycle: number; readonly reason: string };
+  /** State elements that are x at the end of a three-valued run. */
+  readonly unknownRegisters?: readonly string[];
+  readonly notes: readonly string[];
+}
+
+/** A departure as `--json` prints it. */
+export type Mismatch = Pick<Departure, 'cycle' | 'port' | 'expected' | 'actual'>;
+
+const SHOWN = 20;
+
+/** A summary as lines of text. `expectation` names the table the run was compared with. */
+export function summaryText(summary: RunSummary, expectation: string | undefined): string {
+  const { cycles, seconds, cyclesPerSecond, engine, powerUp } = summary;
+  const lines = [
+    `${count(cycles)} cycles in ${seconds.toFixed(2)} s, ${rateText(cyclesPerSecond)}` +
+      ` (engine ${engine}, power-up ${powerUp})`,
+  ];
+  if (summary.signature !== undefined) lines.push(`signature ${summary.signature}`);
+  if (summary.unknownRegisters !== undefined) lines.push(unknownText(summary.unknownRegisters));
+  for (const note of summary.notes) lines.push(`note: ${note}`);
+  if (summary.stopped !== undefined) {
+    lines.push(`stopped at cycle ${summary.stopped.cycle}: ${summary.stopped.reason}`);
+  }
+  if (expectation !== undefined) lines.push(verdict(summary, expectation));
+  return lines.join('\n');
+}
+
+function verdict({ mismatch, mismatches }: RunSummary, expectation: string): string {
+  if (mismatch === undefined) return `as expected by ${expectation}`;
+  if (mismatches !== undefined && mismatches > 1) {
+    return `${count(mismatches)} departures from ${expectation}, the first at cycle ${mismatch.cycle}`;
+  }
+  return `departs from ${expectation} at cycle ${mismatch.cycle}`;
+}
+
+function unknownText(names: readonly string[]): string {
+  if (names.length === 0) return 'every register is known';
+  const rest = names.length > SHOWN ? `, and ${names.length - SHOWN} more` : '';
+  return `${names.length} still unknown: ${names.slice(0, SHOWN).join(', ')}${rest}`;
+}
+
+/** A count with its thousands apart: 3,000,000. */
+export const count = (value: number): string => value.toLocaleString('en-US');
+
+/** A rate in words that fit its size. */
+export function rateText(perSecond: number): string {
+  if (perSecond >= 1e6) return `${(perSecond / 1e6).toPrecision(3)} million cycles/s`;
+  if (perSecond >= 1e3) return `${(perSecond / 1e3).toPrecision(3)} thousand cycles/s`;
+  return `${perSecond.toPrecision(3)} cycles/s`;
+}

@@ -1,0 +1,28 @@
+import type { ModelLayout } from './layout.js';
+import type { StateMap } from './stateBits.js';
+
+/** Where things stand in the memory of a compiled model; addresses and sizes in bytes. */
+export interface MemoryMap {
+  /**
+   * Two areas of equal layout; a cycle reads the state from one and writes the next state to the
+   * other. Each starts with one byte per state bit, of which bit 0 counts.
+   */
+  readonly areas: readonly [number, number];
+  /** First byte free for stimulus and response rows. */
+  readonly buffers: number;
+}
+
+/** A compiled model: the bytes of a WebAssembly module and what is needed to run it. */
+export interface WasmModel extends StateMap {
+  /**
+   * Exports `memory`, the mutable global `current` (address of the area that holds the state),
+   * and `run(cycles, stimulus, stimulusStride, response, responseStride)`, which returns the
+   * number of cycles done: fewer than asked for if one has no result, whose fault number is then
+   * in the global `fault`.
+   */
+  readonly bytes: Uint8Array<ArrayBuffer>;
+  readonly layout: ModelLayout;
+  readonly memory: MemoryMap;
+  /** Messages of the faults by number. */
+  readonly faults: readonly string[];
+}

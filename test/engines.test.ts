@@ -1,0 +1,55 @@
+import fc from 'fast-check';
+import { describe, expect, it } from 'vitest';
+import type { Circuit } from '../compiler/circuit/circuit.js';
+import { powerUpState } from '../compiler/circuit/powerUp.js';
+import { designOf } from '../compiler/compile.js';
+import { courseOf, enginesOf } from './support/engines.js';
+import { randomBanks } from './support/randomBanks.js';
+import { type RandomCircuitOptions, randomCircuit } from './support/randomCircuit.js';
+import { randomRows } from './support/responses.js';
+
+const SEED = 20260101;
+const CYCLES = 40;
+
+/** Runs one circuit on all engines with the same stimulus and expects the same of each. */
+async function expectAgreement(circuit: Circuit, threeValued: boolean, seed: number) {
+  const design = designOf(circuit, { threeValued });
+  const rows = randomRows(design.layout, seed, CYCLES);
+  const state = powerUpState(circuit, threeValued ? 'unknown' : 'random', seed);
+  const { reference, others } = await enginesOf(design);
+  const expected = courseOf(reference, state, rows, CYCLES);
+  for (const [name, engine] of others) {
+    expect(courseOf(engine, state, rows, CYCLES), name).toEqual(expected);
+  }
+}
+
+async function holdsFor(options: RandomCircuitOptions, threeValued: boolean, numRuns: number) {
+  await fc.assert(
+    fc.asyncProperty(randomCircuit(options), fc.nat(1e6), (circuit, seed) =>
+      expectAgreement(circuit, threeValued, seed),
+    ),
+    { seed: SEED, numRuns },
+  );
+}
+
+describe('the engines agree on random circuits', () => {
+  it('with registers on one edge', () => holdsFor({}, false, 150));
+  it('with wide ports and many gates', () =>
+    holdsFor({ maxInputs: 8, maxWidth: 40, maxRegisters: 40, maxGates: 300 }, false, 40));
+  it('with asynchronous set and reset', () => holdsFor({ asynchronous: true }, false, 300));
+  it('with registers on both edges', () => holdsFor({ clocking: 'edges' }, false, 100));
+  it('with gated clocks and latches', () =>
+    holdsFor({ clocking: 'gated', latches: true, asynchronous: true }, false, 100));
+  it('with divided clocks', () =>
+    holdsFor({ clocking: 'divided', latches: true, asynchronous: true }, false, 100));
+  it('with banks of registers', () =>
+    fc.assert(fc.asyncProperty(randomBanks(), fc.boolean(), fc.nat(1e6), expectAgreement), {
+      seed: SEED,
+      numRuns: 150,
+    }));
+  it('with combinational loops', () =>
+    holdsFor({ loops: true, latches: true, asynchronous: true, maxGates: 25 }, false, 200));
+  it('with combinational loops and three values', () =>
+    holdsFor({ loops: true, unknowns: true, maxGates: 15 }, true, 200));
+  it('with three values', () => holdsFor({ unknowns: true, asynchronous: true }, true, 100));
+});

@@ -1,0 +1,44 @@
+import fc from 'fast-check';
+import { describe, expect, it } from 'vitest';
+import { EMPTY_HASH, hashStep, NameTable } from '../../compiler/read/names.js';
+
+describe('NameTable', () => {
+  it('the empty name is 0', () => {
+    const names = new NameTable();
+    expect(names.internText('')).toBe(0);
+    expect(names.text(0)).toBe('');
+    expect(names.count).toBe(1);
+  });
+
+  it('a name keeps its id, and another gets the next', () => {
+    const names = new NameTable();
+    expect(['a', 'b', 'a', 'ab', 'b'].map((name) => names.internText(name))).toEqual([
+      1, 2, 1, 3, 2,
+    ]);
+  });
+
+  it('ids and names belong to each other, also when the table has grown', () => {
+    fc.assert(
+      fc.property(fc.uniqueArray(fc.string({ unit: 'grapheme' }), { maxLength: 40 }), (texts) => {
+        const names = new NameTable(1);
+        const many = Array.from({ length: 3000 }, (_, i) => `n${i}`);
+        const all = [...texts, ...many];
+        const ids = all.map((text) => names.internText(text));
+        expect(ids.map((id) => names.text(id))).toEqual(all);
+        expect(all.map((text) => names.internText(text))).toEqual(ids);
+        expect(new Set(ids).size).toBe(new Set(all).size);
+      }),
+      { seed: 1364, numRuns: 20 },
+    );
+  });
+
+  it('a part of a text is a name, with its hash or without', () => {
+    const names = new NameTable();
+    const bytes = new TextEncoder().encode('xxabcxx');
+    let hash = EMPTY_HASH;
+    for (const byte of bytes.subarray(2, 5)) hash = hashStep(hash, byte);
+    const id = names.internHashed(bytes, 2, 5, hash);
+    expect(names.text(id)).toBe('abc');
+    expect(names.intern(bytes, 2, 5)).toBe(id);
+  });
+});

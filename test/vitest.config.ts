@@ -1,0 +1,11 @@
+import { defineConfig } from 'vitest/config';
+
+export default defineConfig({
+  test: {
+    root: new URL('..', import.meta.url).pathname,
+    include: ['test/**/*.test.ts'],
+    // Two slow cores compile WebAssembly and run interpreters side by side.
+    testTimeout: 120_000,
+    hookTimeout: 120_000,
+  },
+});
