@@ -1,10 +1,9 @@
-import type binaryen from 'binaryen';
 import type { ModelLayout } from '../runtime/layout.js';
 import type { WasmModel } from '../runtime/wasmModel.js';
 import type { Circuit } from './circuit/circuit.js';
 import { type ClockPorts, findClockPorts } from './circuit/clockPorts.js';
 import { modelLayout } from './circuit/modelLayout.js';
-import { emitModel, loadBinaryen } from './emit/emitModel.js';
+import { type Emitter, localEmitter } from './emit/emitter.js';
 import { buildProgram } from './passes/buildProgram.js';
 import { choosePolarity } from './passes/choosePolarity.js';
 import { compact } from './passes/compact.js';
@@ -44,11 +43,7 @@ export function programOf({ circuit, clocks, layout }: Design): Program {
   return buildProgram(logic, order, inverted);
 }
 
-/** Compiles a design to a WebAssembly model. `wasm` is the loaded Binaryen, if already at hand. */
-export async function compile(
-  design: Design,
-  wasm: Promise<typeof binaryen> = loadBinaryen(),
-): Promise<WasmModel> {
-  const program = programOf(design);
-  return emitModel(await wasm, program, design.layout);
+/** Compiles a design to a WebAssembly model. */
+export function compile(design: Design, emitter: Emitter = localEmitter()): Promise<WasmModel> {
+  return emitter.emit(programOf(design), design.layout);
 }

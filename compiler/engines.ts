@@ -1,7 +1,7 @@
-import type binaryen from 'binaryen';
 import type { Engine } from '../runtime/engine.js';
 import { WasmEngine } from '../runtime/wasmEngine.js';
 import { compile, type Design, programOf } from './compile.js';
+import type { Emitter } from './emit/emitter.js';
 import { BytecodeEngine } from './interpret/bytecodeEngine.js';
 import { ReferenceEngine } from './interpret/reference/referenceEngine.js';
 
@@ -11,15 +11,15 @@ export const engineNames = ['wasm', 'bytecode', 'reference'] as const;
 /** One of `engineNames`. */
 export type EngineName = (typeof engineNames)[number];
 
-/** Makes an engine for a design. `wasm` is Binaryen on its way, if it has been asked for. */
+/** Makes an engine for a design. `emitter` may have been started before, to be ready. */
 export async function createEngine(
   design: Design,
   name: EngineName,
-  wasm?: Promise<typeof binaryen>,
+  emitter?: Emitter,
 ): Promise<Engine> {
   switch (name) {
     case 'wasm':
-      return WasmEngine.create(await compile(design, wasm));
+      return WasmEngine.create(await compile(design, emitter));
     case 'bytecode':
       return new BytecodeEngine(programOf(design), design.layout);
     case 'reference':

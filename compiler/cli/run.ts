@@ -3,12 +3,13 @@ import { readStimulus } from '../../runtime/node/index.js';
 import { heldStimulus, randomStimulus, type StimulusBlock } from '../../runtime/stream.js';
 import { type PowerUp, powerUpModes } from '../circuit/powerUp.js';
 import { startingRegisters } from '../circuit/startingRegisters.js';
-import type { Design } from '../compile.js';
-import { loadBinaryen } from '../emit/emitModel.js';
+import { type Design, designOf } from '../compile.js';
+import { startEmitter } from '../emit/emitter.js';
 import { type EngineName, engineNames } from '../engines.js';
 import { runDesign } from '../run/runDesign.js';
 import { summaryText } from '../run/runSummary.js';
-import { addNetlistOptions, loadDesign, type NetlistOptions } from './netlists.js';
+import { addNetlistOptions, loadCircuit, type NetlistOptions } from './netlists.js';
+import { printDiagnostics } from './printDiagnostics.js';
 import { UsageError } from './usageError.js';
 
 interface RunOptions extends NetlistOptions {
@@ -44,7 +45,9 @@ export function runCommand(): Command {
         'how registers start that the netlist gives no value (default: zero)',
       ).choices(powerUpModes),
     )
-    .option('--seed <seed>', 'seed of random power-up', seed, 0n)
+    .addOption(
+      new Option('--seed <seed>', 'seed of random power-up').argParser(seed).default(0n, '0'),
+    )
     .addOption(new Option('--engine <name>', 'what runs it').choices(engineNames).default('wasm'))
     .option('--json', 'print the summary as JSON')
     .addHelpText('after', HELP)
@@ -64,10 +67,10 @@ Example:
 
 async function run(files: string[], options: RunOptions): Promise<void> {
   const powerUp = options.powerUp ?? 'zero';
-  // Binaryen takes a while to load: it comes while the netlist is read.
-  const wasm = options.engine === 'wasm' ? loadBinaryen() : undefined;
-  const design = await loadDesign(files, options, { threeValued: powerUp === 'unknown' });
-  if (options.powerUp === undefined) warnOfStart(design);
+  // The emitter takes a while to get ready: it does so while the netlist is read.
+  const emitter = options.engine === 'wasm' ? startEmitter() : undefined;
+  const { circuit, found } = await loadCircuit(files, options);
+  const design = designOf(circuit, { threeValued: powerUp === 'unknown' });
   const { stimulus, notes } = stimulusOf(design, options);
   const interrupt = new AbortController();
   process.once('SIGINT', () => interrupt.abort());
@@ -77,9 +80,15 @@ async function run(files: string[], options: RunOptions): Promise<void> {
     stimulus,
     notes,
     interrupt: interrupt.signal,
+    // Not before: where a table is wrong, that is all there is to say.
+    onStart: () => {
+      printDiagnostics(found);
+      if (options.powerUp === undefined) warnOfStart(design);
+    },
     onDeparture: (text) => process.stdout.write(options.json ? '' : `${text}\n`),
-    ...(wasm && { wasm }),
+    ...(emitter && { emitter }),
   });
+  await emitter?.close();
   const text = options.json
     ? JSON.stringify(summary, null, 2)
     : summaryText(summary, options.expect);

@@ -3,6 +3,8 @@ import { PolarityEdges } from './polarityEdges.js';
 
 /** Most nodes that one trial may turn over; wide exclusive-or networks would cost more than they gain. */
 const CASCADE_LIMIT = 64;
+/** Trials for each circuit; large ones are not swept until nothing more is gained. */
+const TRIALS = 400_000;
 const SWEEPS = 16;
 
 /**
@@ -16,12 +18,13 @@ const SWEEPS = 16;
 export function choosePolarity(logic: Logic): Uint8Array {
   const edges = new PolarityEdges(logic);
   const gated = gatedStates(logic);
-  for (let sweep = 0; sweep < SWEEPS; sweep++) {
+  const sweeps = Math.min(SWEEPS, Math.max(2, Math.floor(TRIALS / logic.nodeCount)));
+  for (let sweep = 0; sweep < sweeps; sweep++) {
     let gained = false;
     for (let node = 1; node < logic.nodeCount; node++) {
       const op = logic.op[node]!;
       if (op !== LogicOp.And && (op !== LogicOp.State || gated[logic.a[node]!] === 1)) continue;
-      const turned = cascade(logic, edges, node);
+      const turned = cascade(edges, node);
       if (turned === undefined) continue;
       const before = edges.cost;
       for (const each of turned) edges.turn(each);
@@ -42,21 +45,14 @@ function gatedStates(logic: Logic): Uint8Array {
   return gated;
 }
 
-/** A mux keeps the polarity of its 0-operand, an exclusive-or the parity of both operands. */
-function followsOperand(logic: Logic, user: number, node: number): boolean {
-  const op = logic.op[user];
-  if (op === LogicOp.Mux) return logic.b[user]! >>> 1 === node;
-  return op === LogicOp.Xor;
-}
-
 // The node and every node whose polarity follows from it, each once; undefined if too many.
-function cascade(logic: Logic, edges: PolarityEdges, node: number): number[] | undefined {
+function cascade(edges: PolarityEdges, node: number): number[] | undefined {
   const turned = [node];
+  if (edges.followersOf(node).length === 0) return turned;
   const parity = new Map<number, number>();
   const waiting: number[] = [];
   for (let current: number | undefined = node; current !== undefined; ) {
-    for (const user of edges.usersOf(current)) {
-      if (!followsOperand(logic, user, current)) continue;
+    for (const user of edges.followersOf(current)) {
       if (!parity.has(user)) waiting.push(user);
       parity.set(user, (parity.get(user) ?? 0) ^ 1);
     }

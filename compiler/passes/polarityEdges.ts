@@ -1,78 +1,48 @@
-import { type Logic, LogicOp } from '../logic/logic.js';
+import { type Literal, type Logic, LogicOp } from '../logic/logic.js';
 
 /**
  * Who reads which node, and which of these reads need the inverse of what is kept.
  *
  * An edge is a read whose polarity matters: of an and-node, of the 1-operand of a multiplexer, of
- * an output or a next state. It is at odds when `sign ^ kept(node) ^ kept(reader)` is 1.
+ * an output, a condition or a next state. It is at odds when `sign ^ kept(node) ^ kept(reader)` is
+ * 1. Edges and users stand in flat lists by node, since there are several for each gate.
  */
 export class PolarityEdges {
   readonly inverted: Uint8Array;
   /** Nodes that at least one reader needs inverted: each costs one inversion. */
   cost = 0;
-  readonly #driver: number[] = [];
-  readonly #odd: number[] = [];
+  readonly #driver: Uint32Array;
+  readonly #odd: Uint8Array;
   readonly #oddReads: Int32Array;
-  readonly #edgesOf: number[][];
-  readonly #users: number[][];
+  readonly #edges: Lists;
+  readonly #followers: Lists;
 
   constructor(logic: Logic) {
+    const edges = edgesOf(logic);
     this.inverted = new Uint8Array(logic.nodeCount);
     this.#oddReads = new Int32Array(logic.nodeCount);
-    this.#edgesOf = Array.from({ length: logic.nodeCount }, () => []);
-    this.#users = Array.from({ length: logic.nodeCount }, () => []);
-    for (let node = 1; node < logic.nodeCount; node++) this.#addNode(logic, node);
-    this.#addSinks(logic);
+    this.#driver = Uint32Array.from(edges.literals, (literal) => literal >>> 1);
+    this.#odd = new Uint8Array(this.#driver.length);
+    this.#edges = new Lists(logic.nodeCount, (add) => {
+      for (const [edge, driver] of this.#driver.entries()) {
+        add(driver, edge);
+        // Node 0 stands for a reader outside, which never turns over.
+        if (edges.readers[edge] !== 0) add(edges.readers[edge]!, edge);
+      }
+    });
+    this.#followers = new Lists(logic.nodeCount, (add) => eachFollower(logic, add));
+    for (const [edge, literal] of edges.literals.entries()) if (literal & 1) this.#flip(edge);
   }
 
-  usersOf(node: number): readonly number[] {
-    return this.#users[node]!;
+  /** The nodes whose polarity follows from that of a node. */
+  followersOf(node: number): Uint32Array {
+    return this.#followers.of(node);
   }
 
   /** Turns over one node; call it for all that follows too, in any order. */
   turn(node: number): void {
     this.inverted[node]! ^= 1;
-    for (const edge of this.#edgesOf[node]!) this.#flip(edge);
-  }
-
-  #addNode(logic: Logic, node: number): void {
-    const op = logic.op[node]!;
-    if (op < LogicOp.And) return;
-    const a = logic.a[node]!;
-    const b = logic.b[node]!;
-    this.#users[a >>> 1]!.push(node);
-    if (b >>> 1 !== a >>> 1) this.#users[b >>> 1]!.push(node);
-    if (op === LogicOp.And) {
-      this.#edge(a, node);
-      this.#edge(b, node);
-    } else if (op === LogicOp.Mux) {
-      this.#edge(logic.c[node]!, node);
-    }
-  }
-
-  #addSinks(logic: Logic): void {
-    const stateNode = new Int32Array(logic.states.length);
-    for (let node = 0; node < logic.nodeCount; node++) {
-      if (logic.op[node] === LogicOp.State) stateNode[logic.a[node]!] = node;
-    }
-    // Node 0 stands for a reader outside, which never turns over.
-    for (const [bit, literal] of logic.next.entries()) this.#edge(literal, stateNode[bit]!);
-    for (const { enable, gate } of logic.updates) {
-      this.#edge(enable, 0);
-      this.#edge(gate, 0);
-    }
-    for (const literal of logic.outputs) this.#edge(literal, 0);
-    for (const fault of logic.faults) this.#edge(fault.when, 0);
-  }
-
-  #edge(literal: number, reader: number): void {
-    const driver = literal >>> 1;
-    if (driver === 0) return;
-    const edge = this.#driver.push(driver) - 1;
-    this.#odd.push(0);
-    this.#edgesOf[driver]!.push(edge);
-    if (reader !== 0) this.#edgesOf[reader]!.push(edge);
-    if ((literal & 1) === 1) this.#flip(edge);
+    for (const edge of this.#edges.of(node)) this.#flip(edge);
   }
 
   #flip(edge: number): void {
@@ -81,5 +51,67 @@ export class PolarityEdges {
     if (this.#odd[edge] === 1) {
       if (this.#oddReads[driver]!++ === 0) this.cost++;
     } else if (--this.#oddReads[driver]! === 0) this.cost--;
+  }
+}
+
+function edgesOf(logic: Logic): { literals: Literal[]; readers: number[] } {
+  const literals: Literal[] = [];
+  const readers: number[] = [];
+  const add = (literal: Literal, reader: number): void => {
+    if (literal < 2) return;
+    literals.push(literal);
+    readers.push(reader);
+  };
+  const stateNode = new Int32Array(logic.states.length);
+  for (let node = 1; node < logic.nodeCount; node++) {
+    const op = logic.op[node];
+    if (op === LogicOp.State) stateNode[logic.a[node]!] = node;
+    else if (op === LogicOp.Mux) add(logic.c[node]!, node);
+    else if (op === LogicOp.And) {
+      add(logic.a[node]!, node);
+      add(logic.b[node]!, node);
+    }
+  }
+  for (const [bit, literal] of logic.next.entries()) add(literal, stateNode[bit]!);
+  for (const { enable, gate } of logic.updates) {
+    add(enable, 0);
+    add(gate, 0);
+  }
+  for (const literal of logic.outputs) add(literal, 0);
+  for (const fault of logic.faults) add(fault.when, 0);
+  return { literals, readers };
+}
+
+// A mux keeps the polarity of its 0-operand, an exclusive-or the parity of both operands.
+function eachFollower(logic: Logic, add: (node: number, follower: number) => void): void {
+  for (let node = 1; node < logic.nodeCount; node++) {
+    const op = logic.op[node];
+    if (op === LogicOp.Xor) add(logic.a[node]! >>> 1, node);
+    if (op === LogicOp.Xor || op === LogicOp.Mux) add(logic.b[node]! >>> 1, node);
+  }
+}
+
+/** A list of numbers for each node, all in one array. */
+class Lists {
+  readonly #start: Uint32Array;
+  readonly #members: Uint32Array;
+
+  // Two walks, one to count and one to place, need no list of pairs.
+  constructor(nodes: number, walk: (add: (node: number, member: number) => void) => void) {
+    this.#start = new Uint32Array(nodes + 1);
+    walk((node) => {
+      this.#start[node + 1]!++;
+    });
+    for (let node = 0; node < nodes; node++) this.#start[node + 1]! += this.#start[node]!;
+    this.#members = new Uint32Array(this.#start[nodes]!);
+    const next = this.#start.slice();
+    walk((node, member) => {
+      this.#members[next[node]!] = member;
+      next[node]!++;
+    });
+  }
+
+  of(node: number): Uint32Array {
+    return this.#members.subarray(this.#start[node]!, this.#start[node + 1]!);
   }
 }

@@ -1,14 +1,18 @@
-import type binaryen from 'binaryen';
+import { setImmediate } from 'node:timers/promises';
 import type { Engine } from '../../runtime/engine.js';
 import { ResponseWriter } from '../../runtime/node/index.js';
 import { Signature } from '../../runtime/signature.js';
 import { type ResponseBlock, runBlocks, type StimulusBlock } from '../../runtime/stream.js';
 import { type PowerUp, powerUpState } from '../circuit/powerUp.js';
 import type { Design } from '../compile.js';
+import type { Emitter } from '../emit/emitter.js';
 import { createEngine, type EngineName } from '../engines.js';
 import { Departures } from './departures.js';
 import { Progress } from './progress.js';
 import type { RunSummary } from './runSummary.js';
+
+/** How long a run may keep events waiting. */
+const PAUSE_MS = 50;
 
 /** What to run and what to do with the response. */
 export interface RunRequest {
@@ -29,10 +33,12 @@ export interface RunRequest {
   readonly notes?: readonly string[];
   /** Aborted by Ctrl-C: the run ends after the block at hand. */
   readonly interrupt?: AbortSignal;
+  /** Called when the first cycles are done, so that the tables can be read at least there. */
+  readonly onStart?: () => void;
   /** Told each departure as it is found. */
   readonly onDeparture?: (text: string) => void;
-  /** Binaryen on its way, if it has been asked for. */
-  readonly wasm?: Promise<typeof binaryen>;
+  /** An emitter that has been started before, to be ready. */
+  readonly emitter?: Emitter;
 }
 
 /**
@@ -44,18 +50,25 @@ export interface RunRequest {
  */
 export async function runDesign(design: Design, request: RunRequest): Promise<RunSummary> {
   const { layout, circuit } = design;
-  const engine = await createEngine(design, request.engine, request.wasm);
+  const engine = await createEngine(design, request.engine, request.emitter);
   engine.reset(powerUpState(circuit, request.powerUp, request.seed));
   const outlets = await Outlets.open(design, request);
   const progress = new Progress(request.cycles);
   const started = performance.now();
+  let nextPause = started + PAUSE_MS;
   try {
     for await (const block of runBlocks(engine, request.stimulus, {
       ...(request.cycles !== undefined && { cycles: request.cycles }),
       response: outlets.areWanted,
     })) {
       await outlets.take(block);
+      if (block.firstCycle === 0) request.onStart?.();
       progress.update(outlets.cycles);
+      // Without a pause no event is handled, and an interrupt is one.
+      if (performance.now() > nextPause) {
+        await setImmediate();
+        nextPause = performance.now() + PAUSE_MS;
+      }
       if (outlets.isEnough || request.interrupt?.aborted) break;
     }
     progress.clear();

@@ -1,16 +1,16 @@
 import { compile, type Design, programOf } from '../../compiler/compile.js';
-import { loadBinaryen } from '../../compiler/emit/emitModel.js';
+import { localEmitter } from '../../compiler/emit/emitter.js';
 import { BytecodeEngine } from '../../compiler/interpret/bytecodeEngine.js';
 import { ReferenceEngine } from '../../compiler/interpret/reference/referenceEngine.js';
 import { type Engine, RunFault } from '../../runtime/engine.js';
 import { rowStride } from '../../runtime/layout.js';
 import { WasmEngine } from '../../runtime/wasmEngine.js';
 
-const wasm = loadBinaryen();
+const emitter = localEmitter();
 
 /** The compiled engine of a design. */
 export const wasmEngineOf = async (design: Design): Promise<WasmEngine> =>
-  WasmEngine.create(await compile(design, wasm));
+  WasmEngine.create(await compile(design, emitter));
 
 /** All engines of a design: the reference, and what is checked against it. */
 export async function enginesOf(design: Design): Promise<{

@@ -3,28 +3,26 @@ import type { Position } from '../../diagnostics/sourceMap.js';
 import type { NameTable } from '../names.js';
 import type { Problems } from '../verilog/problems.js';
 import type { Includes, OpenSource } from './includes.js';
-import { Recovery } from './recovery.js';
-import { fileRule, type GroupRule, libraryRule } from './rules.js';
+import { OpenGroup } from './openGroup.js';
+import { Recovery, shortened } from './recovery.js';
+import { cellRule, fileRule, type GroupRule, libraryRule } from './rules.js';
 import { Scanner, Token } from './scanner.js';
 import type { LibertyGroup, LibertyText } from './syntax.js';
 
-/** A group that is being filled. */
-interface OpenGroup extends LibertyGroup {
-  readonly rule: GroupRule;
-  readonly attributes: Map<string, readonly LibertyText[]>;
-  readonly groups: OpenGroup[];
-}
+/** Takes the cells of a file as they are read, with the library that each stands in. */
+export type CellVisitor = (cell: LibertyGroup, library: LibertyGroup) => void;
 
 /**
  * Reads the statements of a library, keeping what the table of rules names.
  *
- * After a fault reading goes on at the next statement, and where a brace is missing at the next
- * group that cannot stand where it does.
+ * After a fault reading goes on at the next statement, and where a brace is missing or too many at
+ * the next group that cannot stand where it does.
  */
 export class LibertyParser {
   readonly #names: NameTable;
   readonly #problems: Problems;
   readonly #includes: Includes;
+  readonly #visitCell: CellVisitor;
   // The groups around the present place, the file itself first.
   readonly #stack: OpenGroup[] = [];
   // Index into the stack of the group that the present file began in.
@@ -34,18 +32,16 @@ export class LibertyParser {
   #scanner!: Scanner;
   #recovery!: Recovery;
 
-  constructor(names: NameTable, problems: Problems, includes: Includes) {
+  constructor(names: NameTable, problems: Problems, includes: Includes, visitCell: CellVisitor) {
     this.#names = names;
     this.#problems = problems;
     this.#includes = includes;
+    this.#visitCell = visitCell;
   }
 
-  /** file ::= { library } */
+  /** file ::= { library }; returns the libraries without their cells */
   parseFile(source: Source): readonly LibertyGroup[] {
-    const file: OpenGroup = {
-      ...{ kind: 'file', names: [], start: 0, end: 0, rule: fileRule },
-      ...{ attributes: new Map(), groups: [] },
-    };
+    const file = new OpenGroup('file', [], fileRule, 0, 0);
     this.#stack.push(file);
     this.#parseSource(this.#includes.open(source), file);
     this.#stack.pop();
@@ -87,53 +83,67 @@ export class LibertyParser {
   /** statement ::= NAME `:` value | NAME `(` arguments `)` [ `{` statements `}` ] | `;` */
   #statement(group: OpenGroup): void {
     const scanner = this.#scanner;
-    const { token, position, endPosition } = scanner;
+    const { token, position } = scanner;
     if (token === Token.Semicolon) {
       scanner.next();
       return;
     }
     if (token !== Token.Word && token !== Token.String) {
-      this.#recovery.unexpected('the name of an attribute or group');
+      this.#recovery.unexpected('the name of an attribute or group', true);
       return;
     }
     const kind = scanner.text();
     scanner.next();
     if (scanner.token === Token.Colon) this.#simpleAttribute(group, kind, position);
     else if (scanner.token === Token.OpenArguments) this.#withArguments(group, kind, position);
-    else this.#recovery.unexpected(`':' or '(' after ${shortened(kind)}`, position, endPosition);
+    else this.#recovery.unexpected(`':' or '(' after ${shortened(kind)}`);
   }
 
   /** The value ends with `;`, or with its line where that is missing. */
   #simpleAttribute(group: OpenGroup, kind: string, start: Position): void {
     const scanner = this.#scanner;
-    const isKept = group.rule.attributes.has(kind);
-    const colonEnd = scanner.endPosition;
     if (group.rule === fileRule) this.#recovery.outside(kind, 'library', start);
+    const isKept = group.rule.attributes.has(kind);
     scanner.next();
-    let value: LibertyText | undefined;
-    while (!isAfterValue(scanner.token) && (value === undefined || !scanner.isOnNewLine)) {
-      if (isKept && (scanner.token === Token.Colon || scanner.token === Token.Comma)) {
-        this.#recovery.unexpected(`';' after the value of ${kind}`);
-        return;
-      }
-      value = this.#extended(value);
-      scanner.next();
+    if (isAfterValue(scanner)) {
+      this.#recovery.fault(
+        `the value of ${shortened(kind)} is missing`,
+        start,
+        start + kind.length,
+      );
+    } else if (isKept) {
+      const value = this.#value(kind);
+      if (value === undefined) return;
+      group.set(kind, [value]);
+    } else {
+      do scanner.next();
+      while (!isAfterValue(scanner) && !scanner.isOnNewLine);
     }
-    if (value === undefined) {
-      this.#recovery.fault(`the value of ${shortened(kind)} is missing`, start, colonEnd);
-    } else if (isKept) group.attributes.set(kind, [value]);
     this.#accept(Token.Semicolon);
   }
 
-  /** A value with the token added to it. */
-  #extended(value: LibertyText | undefined): LibertyText {
+  /** The tokens up to the end of the attribute; undefined after a report. */
+  #value(kind: string): LibertyText | undefined {
     const scanner = this.#scanner;
-    if (value === undefined) return tokenText(scanner);
-    const { bytes, base, start, end } = scanner;
-    // The quote of a string that begins the value belongs to it now.
-    const first = value.start - base;
-    const from = bytes[first - 1] === 34 && value.end < base + start ? first - 1 : first;
-    return { text: scanner.slice(from, end), start: base + from, end: base + end };
+    // The rows of a table often stand on lines of their own.
+    if (kind !== 'table' && scanner.cutString()) {
+      this.#recovery.fault('the string is not closed before the end of its line');
+    }
+    const first = contentOf(scanner);
+    const firstStart = scanner.start;
+    scanner.next();
+    if (isAfterValue(scanner) || scanner.isOnNewLine) return first;
+    let { end } = scanner;
+    while (!isAfterValue(scanner) && !scanner.isOnNewLine) {
+      if (scanner.token === Token.Colon || scanner.token === Token.Comma) {
+        this.#recovery.unexpected(`';' after the value of ${kind}`);
+        return undefined;
+      }
+      end = scanner.end;
+      scanner.next();
+    }
+    const { base } = scanner;
+    return { text: scanner.slice(firstStart, end), start: base + firstStart, end: base + end };
   }
 
   #withArguments(group: OpenGroup, kind: string, start: Position): void {
@@ -142,7 +152,7 @@ export class LibertyParser {
     if (kind === 'include_file') this.#include(group, start);
     else if (inner !== undefined) this.#group(group, kind, inner, start);
     else if (rule.attributes.has(kind)) this.#complexAttribute(group, kind);
-    else if (!this.#leaveFor(kind, start)) this.#skipped(rule, kind, start);
+    else if (!this.#leaveFor(kind, start)) this.#uninteresting(group, kind, start);
   }
 
   /** group ::= KIND `(` arguments `)` `{` statements `}` */
@@ -150,49 +160,46 @@ export class LibertyParser {
     const scanner = this.#scanner;
     const names = this.#arguments();
     if (names === undefined) return;
-    const end = names.at(-1)?.end ?? scanner.position;
+    const group = new OpenGroup(kind, names, rule, start, scanner.previousEnd);
     if (scanner.token !== Token.OpenGroup) {
-      this.#recovery.unexpected(`'{' after ${describe(kind, names)}`);
+      this.#recovery.unexpected(`'{' after ${describe(group)}`);
       return;
     }
-    const group: OpenGroup = {
-      ...{ kind, names, start, end, rule },
-      ...{ attributes: new Map(), groups: [] },
-    };
-    outer.groups.push(group);
-    if (rule.isEmpty) this.#skipGroup(kind, start);
-    else {
-      scanner.next();
-      this.#fill(group);
+    if (rule !== cellRule) outer.add(group);
+    if (rule.isEmpty) {
+      this.#skipGroup(kind, start);
+      return;
     }
-  }
-
-  /** The statements of a group, and its `}`. */
-  #fill(group: OpenGroup): void {
-    const scanner = this.#scanner;
+    scanner.next();
     this.#stack.push(group);
     this.#statements(group);
     this.#stack.pop();
+    this.#close(group);
+    if (rule === cellRule) this.#visitCell(group, outer);
+  }
+
+  /** The `}` of a group. */
+  #close(group: OpenGroup): void {
     if (this.#returnTo >= 0 || this.#problems.areTooMany) return;
-    if (scanner.token === Token.CloseGroup) scanner.next();
-    else this.#recovery.unclosed(describe(group.kind, group.names), group.start, group.end);
+    if (this.#scanner.token === Token.CloseGroup) this.#scanner.next();
+    else this.#recovery.unclosed(describe(group), group.start, group.end);
   }
 
   #complexAttribute(group: OpenGroup, kind: string): void {
     const values = this.#arguments();
     if (values === undefined) return;
-    group.attributes.set(kind, values);
+    group.set(kind, values);
     this.#accept(Token.Semicolon);
   }
 
-  /** arguments ::= [ argument { [ `,` ] argument } ]; undefined after a report */
+  /** arguments ::= { argument [ `,` ] }; undefined after a report */
   #arguments(): LibertyText[] | undefined {
     const scanner = this.#scanner;
     const list: LibertyText[] = [];
     scanner.next();
     while (scanner.token !== Token.CloseArguments) {
       if (scanner.token === Token.Word || scanner.token === Token.String) {
-        list.push(tokenText(scanner));
+        list.push(contentOf(scanner));
       } else if (scanner.token !== Token.Comma) {
         this.#recovery.unexpected("')'");
         return undefined;
@@ -203,69 +210,66 @@ export class LibertyParser {
     return list;
   }
 
-  /** A group or attribute of no account here. */
-  #skipped(rule: GroupRule, kind: string, start: Position): void {
+  /** A group or attribute that tells nothing of the logic, or stands where it cannot. */
+  #uninteresting({ rule }: OpenGroup, kind: string, start: Position): void {
     const scanner = this.#scanner;
+    if (rule === fileRule) this.#recovery.outside(kind, 'library', start);
     if (rule === fileRule && libraryRule.groups.has(kind)) {
-      this.#reopenLibrary(kind, start);
+      this.#reopenLibrary(start);
       return;
     }
-    if (rule === fileRule) this.#recovery.outside(kind, 'library', start);
-    else if (rule === libraryRule && libraryRule.groups.get('cell')!.groups.has(kind)) {
+    if (rule === libraryRule && cellRule.groups.has(kind)) {
       this.#recovery.outside(kind, 'cell', start);
     }
-    if (!scanner.skipArguments()) {
-      this.#returnTo = this.#recovery.resume(kind, start, this.#libraryDepth());
-      return;
+    if (!scanner.skipArguments()) this.#resume(kind, start);
+    else {
+      scanner.next();
+      if (scanner.token === Token.OpenGroup) this.#skipGroup(kind, start);
+      else this.#accept(Token.Semicolon);
     }
-    scanner.next();
-    if (scanner.token === Token.OpenGroup) this.#skipGroup(kind, start);
-    else this.#accept(Token.Semicolon);
   }
 
   #skipGroup(kind: string, start: Position): void {
     if (this.#scanner.skipGroup()) this.#scanner.next();
-    else this.#returnTo = this.#recovery.resume(kind, start, this.#libraryDepth());
+    else this.#resume(kind, start);
   }
 
-  /** Takes a cell outside of all libraries as one of the last. */
-  #reopenLibrary(kind: string, start: Position): void {
-    this.#recovery.outside(kind, 'library', start);
-    this.#scanner.goTo(start - this.#scanner.base);
-    this.#scanner.next();
+  /** Goes on with the next cell after something of which the end is missing. */
+  #resume(kind: string, start: Position): void {
+    const library = this.#stack.findLastIndex(({ rule }) => rule.groups.has('cell'));
+    if (this.#recovery.resume(kind, start)) this.#returnTo = Math.max(library, this.#floor);
+  }
+
+  /** Takes what stands outside of all libraries, from a position on, as part of the last. */
+  #reopenLibrary(start: Position): void {
     const file = this.#stack.at(-1)!;
-    if (file.groups.length === 0) {
-      file.groups.push({
-        ...{ kind: 'library', names: [], start, end: start, rule: libraryRule },
-        ...{ attributes: new Map(), groups: [] },
-      });
-    }
-    const library = file.groups.at(-1)!;
+    const last = file.groups.at(-1);
+    const library = last ?? new OpenGroup('library', [], libraryRule, start, start);
+    if (last === undefined) file.add(library);
+    this.#goBack(start);
     this.#stack.push(library);
     this.#statements(library);
     this.#stack.pop();
-    if (this.#scanner.token === Token.CloseGroup) this.#scanner.next();
+    this.#accept(Token.CloseGroup);
   }
 
   /** Leaves the open groups for the one around them that a group of this kind belongs to. */
   #leaveFor(kind: string, start: Position): boolean {
-    const scanner = this.#scanner;
-    let depth = this.#stack.length - 2;
-    while (depth >= this.#floor && !this.#stack[depth]!.rule.groups.has(kind)) depth--;
+    const depth = this.#stack.findLastIndex(({ rule }) => rule.groups.has(kind));
     if (depth < this.#floor) return false;
-    const open = this.#stack.at(-1)!;
-    const what = describe(open.kind, open.names);
-    const message = `${kind} cannot stand inside ${what}; a '}' is missing before it`;
+    const message = `${kind} cannot stand inside ${describe(this.#stack.at(-1)!)}; is a '}' missing before it?`;
     this.#recovery.fault(message, start, start + kind.length);
-    scanner.goTo(start - scanner.base);
-    scanner.next();
+    this.#goBack(start);
     this.#returnTo = depth;
     return true;
   }
 
   /** include_file ::= `include_file` `(` path `)` `;` */
   #include(group: OpenGroup, start: Position): void {
-    const [path] = this.#arguments() ?? [];
+    const values = this.#arguments();
+    if (values === undefined) return;
+    const [path] = values;
+    // The file may be one that includes itself: what follows is looked at before.
     this.#accept(Token.Semicolon);
     if (path === undefined) {
       const end = start + 'include_file'.length;
@@ -276,12 +280,32 @@ export class LibertyParser {
     if (opened !== undefined) this.#parseSource(opened, group);
   }
 
-  #libraryDepth(): number {
-    const depth = this.#stack.findIndex(({ rule }) => rule === libraryRule);
-    return depth < this.#floor ? -1 : depth;
+  #goBack(position: Position): void {
+    this.#scanner.goTo(position - this.#scanner.base);
+    this.#scanner.next();
   }
 
   #accept(token: number): void {
     if (this.#scanner.token === token) this.#scanner.next();
   }
+}
+
+function isAfterValue({ token }: Scanner): boolean {
+  return (
+    token === Token.Semicolon ||
+    token === Token.CloseGroup ||
+    token === Token.OpenGroup ||
+    token === Token.End
+  );
+}
+
+function contentOf(scanner: Scanner): LibertyText {
+  const { base, contentStart, contentEnd } = scanner;
+  return { text: scanner.text(), start: base + contentStart, end: base + contentEnd };
+}
+
+/** `cell INV` or `ff IQ, IQN`, for messages. */
+function describe({ kind, names }: LibertyGroup): string {
+  const list = names.map(({ text }) => text).join(', ');
+  return list === '' ? `the ${kind} group` : `${kind} ${shortened(list)}`;
 }

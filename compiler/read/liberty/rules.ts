@@ -32,7 +32,8 @@ const flipFlop = rule(['clocked_on', 'clocked_on_also', 'next_state', ...setAndR
 const latch = rule(['data_in', 'enable', 'enable_also', ...setAndReset]);
 const type = rule(['bit_from', 'bit_to', 'bit_width', 'downto']);
 
-const cell = rule(['clock_gating_integrated_cell'], {
+/** The rule of a cell group. */
+export const cellRule: GroupRule = rule(['clock_gating_integrated_cell'], {
   bundle: rule([...pinAttributes, 'members'], { pin }),
   bus: rule([...pinAttributes, 'bus_type'], { pin }),
   ff: flipFlop,
@@ -46,10 +47,8 @@ const cell = rule(['clock_gating_integrated_cell'], {
   type,
 });
 
-const library = rule(['bus_naming_style'], { cell, type });
+/** The rule of a library group. */
+export const libraryRule: GroupRule = rule(['bus_naming_style'], { cell: cellRule, type });
 
 /** The rule of a file: what may stand outside all groups. */
-export const fileRule: GroupRule = rule([], { library });
-
-/** The rule of a library group. */
-export const libraryRule: GroupRule = library;
+export const fileRule: GroupRule = rule([], { library: libraryRule });

@@ -2,6 +2,7 @@ import type { Position } from '../../diagnostics/sourceMap.js';
 import type { NameTable } from '../names.js';
 import { Char, isSpace } from '../verilog/characters.js';
 import {
+  bareLineEnd,
   beginsComment,
   endOfArguments,
   endOfComment,
@@ -43,15 +44,19 @@ export class Scanner {
   /** Where the token begins and ends, in bytes; the quotes of a string are part of it. */
   start = 0;
   end = 0;
+  /** Position after the token before. */
+  previousEnd: Position;
   /** Whether a line ended between the token before and this one. */
   isOnNewLine = false;
   /** Where the string or comment begins that the text ends within; -1 for none. */
   openEnd = -1;
   readonly #names: NameTable;
+  #isCut = false;
 
   constructor(bytes: Uint8Array, base: Position, names: NameTable) {
     this.bytes = bytes;
     this.base = base;
+    this.previousEnd = base;
     this.#names = names;
     // A byte order mark is no part of the text.
     if (bytes[0] === 0xef && bytes[1] === 0xbb && bytes[2] === 0xbf) this.end = 3;
@@ -70,8 +75,10 @@ export class Scanner {
   /** Goes to the next token. */
   next(): void {
     const { bytes } = this;
+    this.previousEnd = this.base + this.end;
     const at = this.#skipBlank(this.end);
     this.start = at;
+    this.#isCut = false;
     if (at === bytes.length) {
       this.token = Token.End;
       this.end = at;
@@ -107,15 +114,28 @@ export class Scanner {
     return this.#goAfter(endOfArguments(this.bytes, this.end));
   }
 
-  /** The text of the token, without the quotes of a string. One object for each distinct text. */
-  text(): string {
-    const isString = this.token === Token.String;
-    return this.slice(isString ? this.start + 1 : this.start, isString ? this.contentEnd : this.end);
+  /** Ends a string token at its first line end without `\`; whether there is one. */
+  cutString(): boolean {
+    const end = this.token === Token.String ? bareLineEnd(this.bytes, this.start + 1) : -1;
+    if (end < 0) return false;
+    this.end = end;
+    this.#isCut = true;
+    return true;
   }
 
-  /** Where the text inside a string ends. */
+  /** The text of the token, without the quotes of a string. One object for each distinct text. */
+  text(): string {
+    return this.slice(this.contentStart, this.contentEnd);
+  }
+
+  /** Where the text of the token begins and ends, in bytes; quotes are no part of it. */
+  get contentStart(): number {
+    return this.token === Token.String ? this.start + 1 : this.start;
+  }
+
   get contentEnd(): number {
-    return this.openEnd === this.start ? this.end : this.end - 1;
+    const hasQuote = this.token === Token.String && !this.#isCut && this.openEnd !== this.start;
+    return hasQuote ? this.end - 1 : this.end;
   }
 
   /** A stretch of the text. One object for each distinct text. */

@@ -1,4 +1,4 @@
-import { Char } from '../verilog/characters.js';
+import { Char, isSpace } from '../verilog/characters.js';
 import { endOfBlockComment, endOfLine } from '../verilog/textEnds.js';
 
 // Bytes that the loops below stop at; all others are passed over by one look into the table.
@@ -77,23 +77,27 @@ export function beginsComment(bytes: Uint8Array, at: number): boolean {
 }
 
 /**
- * Where the first string after `at` begins that goes over a line end without a `\` before it, or
- * -1: if a later string has no end, this is where a quote is most likely missing.
+ * The first line end of a string that no `\` stands before, or -1; `at` is after the opening
+ * quote. Such a string is legal, and yet where a closing quote is most likely missing.
  */
-export function firstBrokenString(bytes: Uint8Array, at: number): number {
-  let i = at;
-  while (i < bytes.length) {
-    const byte = bytes[i++]!;
-    if (byte === Char.Slash) {
-      i = endOfComment(bytes, i - 1);
-      if (i < 0) return -1;
-    }
-    if (byte !== Char.Quote) continue;
-    const end = endOfString(bytes, i);
-    const line = bytes.indexOf(Char.LineFeed, i);
-    if (line >= 0 && (end < 0 || line < end) && !isContinued(bytes, line)) return i - 1;
-    if (end < 0) return -1;
-    i = end;
+export function bareLineEnd(bytes: Uint8Array, at: number): number {
+  const end = endOfString(bytes, at);
+  const limit = end < 0 ? bytes.length : end;
+  let line = bytes.indexOf(Char.LineFeed, at);
+  while (line >= 0 && line < limit && isContinued(bytes, line)) {
+    line = bytes.indexOf(Char.LineFeed, line + 1);
+  }
+  return line < limit ? line : -1;
+}
+
+/** Where the first string begins that has a line end without `\`, or -1. */
+export function firstBareString(bytes: Uint8Array): number {
+  let at = 0;
+  while (at >= 0 && at < bytes.length) {
+    if (bytes[at] === Char.Quote) {
+      if (bareLineEnd(bytes, at + 1) >= 0) return at;
+      at = endOfString(bytes, at + 1);
+    } else at = endOfComment(bytes, at);
   }
   return -1;
 }
@@ -101,6 +105,6 @@ export function firstBrokenString(bytes: Uint8Array, at: number): number {
 /** Whether a `\` stands before a line end, or before the blanks in front of it. */
 function isContinued(bytes: Uint8Array, line: number): boolean {
   let i = line - 1;
-  while (bytes[i] === Char.Space || bytes[i] === 9 || bytes[i] === 13) i--;
+  while (isSpace(bytes[i])) i--;
   return bytes[i] === Char.Backslash;
 }

@@ -42,7 +42,7 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
 }
 
 /** The places of a boundary where a net stands that stood before. */
-export function repeatsOf(boundary: Uint32Array): Repeat[] {
+function repeatsOf(boundary: Uint32Array): Repeat[] {
   const repeats: Repeat[] = [];
   const firstPlace = new Map<number, number>();
   boundary.forEach((net, second) => {

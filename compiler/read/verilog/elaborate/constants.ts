@@ -10,7 +10,7 @@ export interface Range {
 }
 
 /** The widest vector; wider ones are taken for a mistake. */
-export const MAX_WIDTH = 1 << 20;
+const MAX_WIDTH = 1 << 20;
 
 /** A constant with another width and signedness, extended by its own sign if it is signed. */
 export function converted(constant: Constant, width: number, signed: boolean): Constant {

@@ -71,10 +71,6 @@ export class Design {
     return this.#definition.get(name) >= this.modules.length;
   }
 
-  isModule(name: NameId): boolean {
-    return this.#definition.get(name) >= 0 && !this.isPrimitive(name);
-  }
-
   /**
    * Index of the template of a module or primitive with the given parameter values, made when
    * first asked for. `NO_TEMPLATE` where the module contains itself, which is reported at `place`.

@@ -21,16 +21,13 @@ export function declareModule(body: ModuleBody, overrides: Overrides): void {
   declareItems(body, body.root, body.module.items, overrides);
 }
 
-// Routines and parameters come first: whatever their place, ranges and conditions may use them.
 function declareItems(
   body: ModuleBody,
   scope: BlockScope,
   items: readonly Item[],
   overrides: Overrides,
 ): void {
-  bindRoutines(body, scope, items);
-  bindParameters(body, scope, items, overrides);
-  for (const item of items) if (item.kind === 'declaration') declare(body, scope, item);
+  declareNames(body, scope, items, overrides);
   let constructs = 0;
   const collect = (some: readonly Item[]): void => {
     for (const item of some) {
@@ -42,15 +39,24 @@ function declareItems(
         expandBlock(body, scope, item.body.name, item.body.items, item);
       } else {
         // `begin … end` alone, as the standard of 2001 has it, makes no scope.
-        bindParameters(body, scope, item.body.items, noOverrides);
-        for (const each of item.body.items) {
-          if (each.kind === 'declaration') declare(body, scope, each);
-        }
+        declareNames(body, scope, item.body.items, noOverrides);
         collect(item.body.items);
       }
     }
   };
   collect(items);
+}
+
+// Routines and parameters come first: whatever their place, ranges and conditions may use them.
+function declareNames(
+  body: ModuleBody,
+  scope: BlockScope,
+  items: readonly Item[],
+  overrides: Overrides,
+): void {
+  bindRoutines(body, scope, items);
+  bindParameters(body, scope, items, overrides);
+  for (const item of items) if (item.kind === 'declaration') declare(body, scope, item);
 }
 
 const expandItems: ExpandItems = (body, scope, items) => {

@@ -1,0 +1,61 @@
+import { Worker } from 'node:worker_threads';
+import type { ModelLayout } from '../../runtime/layout.js';
+import type { WasmModel } from '../../runtime/wasmModel.js';
+import type { Program } from '../program/program.js';
+import { emitModel, loadBinaryen } from './emitModel.js';
+
+/** Turns programs into models; gets ready as soon as it is made. */
+export interface Emitter {
+  emit(program: Program, layout: ModelLayout): Promise<WasmModel>;
+  /** Lets go of what it holds. */
+  close(): Promise<void>;
+}
+
+/**
+ * An emitter in a thread of its own: loading Binaryen takes most of a second, in which the netlist
+ * can be read. Close it when done; until then it does not keep the process alive.
+ */
+export function startEmitter(): Emitter {
+  // A thread can only run what has been built; sources run by a loader emit where they are.
+  return import.meta.url.endsWith('.ts') ? localEmitter() : new ThreadEmitter();
+}
+
+/** An emitter in the present thread. */
+export function localEmitter(): Emitter {
+  const binaryen = loadBinaryen();
+  return {
+    emit: async (program, layout) => emitModel(await binaryen, program, layout),
+    close: async () => undefined,
+  };
+}
+
+class ThreadEmitter implements Emitter {
+  readonly #worker = new Worker(new URL('./emitWorker.js', import.meta.url));
+
+  constructor() {
+    this.#worker.unref();
+  }
+
+  emit(program: Program, layout: ModelLayout): Promise<WasmModel> {
+    const { promise, resolve, reject } = withResolvers<WasmModel>();
+    this.#worker.ref();
+    this.#worker.once('message', resolve);
+    this.#worker.once('error', reject);
+    this.#worker.postMessage({ program, layout });
+    return promise.finally(() => this.#worker.unref());
+  }
+
+  async close(): Promise<void> {
+    await this.#worker.terminate();
+  }
+}
+
+function withResolvers<T>() {
+  let resolve!: (value: T) => void;
+  let reject!: (reason: Error) => void;
+  const promise = new Promise<T>((onDone, onFailure) => {
+    resolve = onDone;
+    reject = onFailure;
+  });
+  return { promise, resolve, reject };
+}
