@@ -4,6 +4,7 @@ export default defineConfig({
   test: {
     root: new URL('..', import.meta.url).pathname,
     include: ['test/**/*.test.ts'],
+    globalSetup: ['test/support/build.ts'],
     // Two slow cores compile WebAssembly and run interpreters side by side.
     testTimeout: 120_000,
     hookTimeout: 120_000,

@@ -37,7 +37,7 @@ export function summaryText(summary: RunSummary, expectation: string | undefined
   if (summary.signature !== undefined) lines.push(`signature ${summary.signature}`);
   if (summary.unknownRegisters !== undefined) lines.push(unknownText(summary.unknownRegisters));
   for (const note of summary.notes) lines.push(`note: ${note}`);
-  if (summary.stopped !== undefined) {
+  if (summary.stopped !== undefined && summary.mismatch === undefined) {
     lines.push(`stopped at cycle ${summary.stopped.cycle}: ${summary.stopped.reason}`);
   }
   if (expectation !== undefined) lines.push(verdict(summary, expectation));

@@ -114,9 +114,10 @@ class ExpressionParser {
     const name = this.#token;
     const start = this.#start;
     const end = this.#end;
+    const isPlain = name.length === end - start;
     if (this.#isName) {
       this.#next();
-      if (name === '0' || name === '1') return { kind: 'constant', value: name === '1' ? 1 : 0 };
+      if (isPlain && (name === '0' || name === '1')) return { kind: 'constant', value: name === '1' ? 1 : 0 };
       return { kind: 'name', name, start, end };
     }
     if (name !== '(') this.#fail('expected a pin name, 0, 1 or (');
@@ -151,10 +152,9 @@ class ExpressionParser {
   }
 }
 
-const blank = /(?:\s|\\\s*\n)*/y;
+const blank = /(?:\s+|\\\s*\n)*/y;
 const quotedName = /\\?"[^"\\]+\\?"/y;
-// Brackets may hold a range; a `\` belongs to an escaped name only.
-const plainName = /(?:[^\s!'&*+|^()"\\,;:[\]]|\[[^\][]*\])+/y;
+const plainName = /(?:[^\s!'&*+|^()"\\,;:[\]]+|\[[^\][]*\])+/y;
 
 function matchAt(pattern: RegExp, text: string, at: number): string {
   pattern.lastIndex = at;

@@ -1,0 +1,20 @@
+const bytesOf = (base64) => Uint8Array.from(atob(base64), (character) => character.charCodeAt(0));
+
+/**
+ * Runs a job (see `jobs.ts`) with the functions of a built runtime; returns the signature of the
+ * response. Needs nothing that a page, a worker and Node do not all have.
+ */
+export async function signatureOf(runtime, { model, state, seed, cycles }) {
+  const engine = await runtime.WasmEngine.create({
+    ...model,
+    bytes: bytesOf(model.bytes),
+    stateInverted: bytesOf(model.stateInverted),
+  });
+  engine.reset(Uint8Array.from(state));
+  const signature = new runtime.Signature(engine.layout);
+  const stimulus = runtime.randomStimulus(engine.layout, seed, cycles);
+  for (const block of runtime.runBlocksSync(engine, stimulus)) {
+    signature.add(block.rows, block.cycles);
+  }
+  return signature.digits();
+}

@@ -1,0 +1,9 @@
+import * as runtime from '/runtime/index.js';
+import { signatureOf } from './signatureOf.mjs';
+
+// A rejection inside a worker does not reach the page by itself.
+globalThis.onmessage = ({ data }) =>
+  signatureOf(runtime, data).then(
+    (signature) => postMessage({ signature }),
+    (error) => postMessage({ error: String(error) }),
+  );

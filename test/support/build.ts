@@ -1,0 +1,37 @@
+import { execFile } from 'node:child_process';
+import { existsSync, mkdirSync, rmSync } from 'node:fs';
+import { fileURLToPath } from 'node:url';
+import { promisify } from 'node:util';
+import type { TestProject } from 'vitest/node';
+
+declare module 'vitest' {
+  interface ProvidedContext {
+    /** What the compiler of the project's own sources had to complain about. */
+    buildProblem: string;
+  }
+}
+
+const pathOf = (path: string) => fileURLToPath(new URL(`../../${path}`, import.meta.url));
+
+/**
+ * Builds `dist/` once before all tests, so that what they start is what the sources say.
+ *
+ * A failure is handed to the tests that start the built command, and fails no other.
+ */
+export default async function build({ provide }: TestProject): Promise<void> {
+  const cache = pathOf('node_modules/.cache/');
+  const memory = `${cache}clockstride.tsbuildinfo`;
+  mkdirSync(cache, { recursive: true });
+  // What is remembered of a build that is gone would keep it from being made again.
+  if (!existsSync(pathOf('dist/compiler/cli/main.js'))) rmSync(memory, { force: true });
+  const project = ['-p', pathOf('tsconfig.build.json')];
+  const incremental = ['--incremental', '--tsBuildInfoFile', memory];
+  const args = [pathOf('node_modules/typescript/bin/tsc'), ...project, ...incremental];
+  try {
+    await promisify(execFile)(process.execPath, args);
+    provide('buildProblem', '');
+  } catch (error) {
+    const { stdout, message } = error as { stdout?: string; message: string };
+    provide('buildProblem', stdout || message);
+  }
+}
