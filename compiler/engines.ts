@@ -1,6 +1,6 @@
 import type { Engine } from '../runtime/engine.js';
 import { WasmEngine } from '../runtime/wasmEngine.js';
-import { compile, type Design, programOf } from './compile.js';
+import { compile, type Design, programsOf } from './compile.js';
 import type { Emitter } from './emit/emitter.js';
 import { BytecodeEngine } from './interpret/bytecodeEngine.js';
 import { ReferenceEngine } from './interpret/reference/referenceEngine.js';
@@ -21,7 +21,7 @@ export async function createEngine(
     case 'wasm':
       return WasmEngine.create(await compile(design, emitter));
     case 'bytecode':
-      return new BytecodeEngine(programOf(design), design.layout);
+      return new BytecodeEngine(programsOf(design), design.layout);
     case 'reference':
       return new ReferenceEngine(design.circuit, design);
   }

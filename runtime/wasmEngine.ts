@@ -16,6 +16,7 @@ const CALL_CYCLES = 1024;
 interface ModelExports {
   readonly memory: WebAssembly.Memory;
   readonly current: WebAssembly.Global<'i32'>;
+  readonly position: WebAssembly.Global<'i32'>;
   readonly fault: WebAssembly.Global<'i32'>;
   run(cycles: number, stimulus: number, step: number, response: number, stride: number): number;
 }
@@ -58,6 +59,7 @@ export class WasmEngine implements Engine {
     const [first] = this.#model.memory.areas;
     this.#bytes(first, bits.length).set(bits);
     this.#exports.current.value = first;
+    this.#exports.position.value = 0;
   }
 
   state(): Uint8Array {

@@ -15,8 +15,8 @@ export interface MemoryMap {
 /** A compiled model: the bytes of a WebAssembly module and what is needed to run it. */
 export interface WasmModel extends StateMap {
   /**
-   * Exports `memory`, the mutable global `current` (address of the area that holds the state),
-   * and `run(cycles, stimulus, stimulusStride, response, responseStride)`, which returns the
+   * Exports `memory`, the mutable globals `current` (address of the area that holds the state) and
+   * `position` (place of the next cycle in the pattern of the clocks), and `run(cycles, stimulus, stimulusStride, response, responseStride)`, which returns the
    * number of cycles done: fewer than asked for if one has no result, whose fault number is then
    * in the global `fault`.
    */

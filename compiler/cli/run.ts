@@ -3,16 +3,17 @@ import { readStimulus } from '../../runtime/node/index.js';
 import { heldStimulus, randomStimulus, type StimulusBlock } from '../../runtime/stream.js';
 import { type PowerUp, powerUpModes } from '../circuit/powerUp.js';
 import { startingRegisters } from '../circuit/startingRegisters.js';
-import { type Design, designOf } from '../compile.js';
+import type { Design } from '../compile.js';
 import { startEmitter } from '../emit/emitter.js';
 import { type EngineName, engineNames } from '../engines.js';
 import { runDesign } from '../run/runDesign.js';
 import { summaryText } from '../run/runSummary.js';
+import { addClockOption, type ClockOptions, timedDesign } from './clockOption.js';
 import { addNetlistOptions, loadCircuit, type NetlistOptions } from './netlists.js';
 import { printDiagnostics } from './printDiagnostics.js';
 import { UsageError } from './usageError.js';
 
-interface RunOptions extends NetlistOptions {
+interface RunOptions extends NetlistOptions, ClockOptions {
   readonly stimulus?: string;
   readonly random?: bigint;
   readonly cycles?: number;
@@ -28,7 +29,7 @@ interface RunOptions extends NetlistOptions {
 
 /** The verb `run`: runs cycles of a netlist. */
 export function runCommand(): Command {
-  return addNetlistOptions(new Command('run'))
+  return addClockOption(addNetlistOptions(new Command('run')))
     .description('Runs cycles of a netlist and writes, compares or signs the response.')
     .addOption(
       new Option('--stimulus <file>', 'input values, a CSV row a cycle').conflicts('random'),
@@ -70,7 +71,7 @@ async function run(files: string[], options: RunOptions): Promise<void> {
   // The emitter takes a while to get ready: it does so while the netlist is read.
   const emitter = options.engine === 'wasm' ? startEmitter() : undefined;
   const { circuit, found } = await loadCircuit(files, options);
-  const design = designOf(circuit, { threeValued: powerUp === 'unknown' });
+  const design = timedDesign(circuit, options, { threeValued: powerUp === 'unknown' });
   const { stimulus, notes } = stimulusOf(design, options);
   const interrupt = new AbortController();
   process.once('SIGINT', () => interrupt.abort());

@@ -71,6 +71,11 @@ export const codeTable = {
   ),
   'clock-missing': error('No input port clocks the registers.', 'Bring the clock to a port.'),
 
+  'cell-shadowed': note(
+    'Several files model the same cell; the one named first decides.',
+    'Leave one of the models out, or name the better one first.',
+  ),
+
   // Verilog behaviour
   'constant-required': error(
     'A number that is needed while reading depends on signals.',

@@ -1,7 +1,7 @@
 import type binaryen from 'binaryen';
 import type { ModelLayout } from '../../runtime/layout.js';
 import type { WasmModel } from '../../runtime/wasmModel.js';
-import type { Program } from '../program/program.js';
+import type { CyclePrograms, Program } from '../program/program.js';
 import { type AreaLayout, layArea } from './areaLayout.js';
 import { BlockEmitter, type Emission, type Pointers } from './blockEmitter.js';
 import {
@@ -11,7 +11,7 @@ import {
   packFromValues,
   SCALAR_OUTPUTS,
 } from './packOutputs.js';
-import { RunLocal, runLoop, runPointers } from './runLoop.js';
+import { type CycleCode, RunLocal, runLoop, runPointers } from './runLoop.js';
 import { storesOf } from './sinks.js';
 import { emitUpdates } from './updates.js';
 
@@ -28,24 +28,44 @@ const UPDATES_IN_BLOCK = 300;
 export const loadBinaryen = async (): Promise<typeof binaryen> =>
   (await import('binaryen')).default;
 
-/** Emits a program as a WebAssembly module; `wasm` is the loaded Binaryen library. */
-export function emitModel(wasm: typeof binaryen, program: Program, layout: ModelLayout): WasmModel {
+/** Emits programs as a WebAssembly module; `wasm` is the loaded Binaryen library. */
+export function emitModel(
+  wasm: typeof binaryen,
+  { programs, pattern }: CyclePrograms,
+  layout: ModelLayout,
+): WasmModel {
   const module = new wasm.Module();
   try {
     module.setFeatures(wasm.Features.SIMD128 | wasm.Features.MutableGlobals);
-    const area = layArea(program);
-    const areas = [FIRST_AREA, FIRST_AREA + area.size] as const;
-    const buffers = FIRST_AREA + 2 * area.size;
-    module.setMemory(Math.ceil(buffers / 65536), 65536, 'memory', [], false, false, '0');
+    const layouts = programs.map(layArea);
+    const size = Math.max(...layouts.map((area) => area.size));
+    const areas = [FIRST_AREA, FIRST_AREA + size] as const;
+    const patternAt = FIRST_AREA + 2 * size;
+    const buffers = patternAt + Math.ceil(pattern.length / 64) * 64;
+    const segment = { name: 'pattern', offset: module.i32.const(patternAt), data: pattern };
+    const pages = Math.ceil(buffers / 65536);
+    module.setMemory(pages, 65536, 'memory', [segment], false, false, '0');
     addGlobals(module, wasm.i32, areas[0]);
-    addRun(wasm, module, program, area, areas[0] + areas[1]);
+    const cycles = programs.map((program, i) => cycleCode(wasm, module, program, layouts[i]!, i));
+    const parameters = wasm.createType(new Array(RunLocal.Current).fill(wasm.i32));
+    const localCount = Math.max(...cycles.map((cycle) => cycle.localCount));
+    const locals = new Array<binaryen.Type>(localCount - RunLocal.Current).fill(wasm.i32);
+    const place = { areaSum: areas[0] + areas[1], patternAt, patternLength: pattern.length };
+    module.addFunction(
+      'run',
+      parameters,
+      wasm.i32,
+      locals,
+      runLoop(module, wasm.i32, place, cycles),
+    );
+    module.addFunctionExport('run', 'run');
     return {
       bytes: Uint8Array.from(module.emitBinary()),
       layout,
       memory: { areas, buffers },
-      states: program.states,
-      stateInverted: program.stateInverted,
-      faults: program.faults.map((fault) => fault.message),
+      states: programs[0]!.states,
+      stateInverted: programs[0]!.stateInverted,
+      faults: programs.flatMap((program) => program.faults.map((fault) => fault.message)),
     };
   } finally {
     module.dispose();
@@ -53,45 +73,41 @@ export function emitModel(wasm: typeof binaryen, program: Program, layout: Model
 }
 
 function addGlobals(module: binaryen.Module, i32: binaryen.Type, firstArea: number): void {
-  module.addGlobal('current', i32, true, module.i32.const(firstArea));
-  module.addGlobal('fault', i32, true, module.i32.const(0));
-  module.addGlobalExport('current', 'current');
-  module.addGlobalExport('fault', 'fault');
+  const initial = { current: firstArea, position: 0, fault: 0 };
+  for (const [name, value] of Object.entries(initial)) {
+    module.addGlobal(name, i32, true, module.i32.const(value));
+    module.addGlobalExport(name, name);
+  }
 }
 
-function addRun(
+// The code of one cycle, with its outputs packed into the response row.
+function cycleCode(
   wasm: typeof binaryen,
   module: binaryen.Module,
   program: Program,
   area: AreaLayout,
-  areaSum: number,
-): void {
+  index: number,
+): CycleCode {
   const { i32 } = wasm;
   const isSmall = program.blockStart.length === 2 && program.stateCount < COPIES_IN_BLOCK;
   const groups = outputGroups(program);
   const packsValues = isSmall && program.outputs.length <= SCALAR_OUTPUTS;
   const sinks = storesOf(program, area, packsValues ? [] : outputsInMemory(groups));
   const emission: Emission = { module, i32, program, area, sinks };
-  const cycle = isSmall
+  const { statements, localCount } = isSmall
     ? inlineCycle(emission, packsValues)
-    : callCycle(emission, wasm.createType([i32, i32, i32]), wasm.none);
+    : callCycle(emission, `cycle${index}`, wasm.createType([i32, i32, i32]), wasm.none);
   if (!packsValues) {
-    cycle.statements.push(...packFromMemory(emission, groups, runPointers, RunLocal.Response));
+    statements.push(...packFromMemory(emission, groups, runPointers, RunLocal.Response));
   }
-  const parameters = wasm.createType(new Array(RunLocal.Current).fill(i32));
-  const locals = new Array<binaryen.Type>(cycle.localCount - RunLocal.Current).fill(i32);
-  module.addFunction('run', parameters, i32, locals, runLoop(emission, areaSum, cycle.statements));
-  module.addFunctionExport('run', 'run');
+  const faults = program.faults.map((_, fault) => area.faults + fault);
+  return { statements, localCount, faults };
 }
 
-interface CycleCode {
-  readonly statements: binaryen.ExpressionRef[];
-  /** Locals in use, those of `run` included. */
-  readonly localCount: number;
-}
+type Body = Pick<CycleCode, 'statements' | 'localCount'>;
 
 // A small circuit's whole cycle stands in the loop and costs no call.
-function inlineCycle(emission: Emission, packsValues: boolean): CycleCode {
+function inlineCycle(emission: Emission, packsValues: boolean): Body {
   const { program, sinks } = emission;
   const block = new BlockEmitter(emission, 0, runPointers, RunLocal.Free);
   block.emit(packsValues ? program.outputs : []);
@@ -103,7 +119,12 @@ function inlineCycle(emission: Emission, packsValues: boolean): CycleCode {
 
 const PARAMETERS: Pointers = { current: 0, next: 1, row: 2 };
 
-function callCycle(emission: Emission, parameters: binaryen.Type, none: binaryen.Type): CycleCode {
+function callCycle(
+  emission: Emission,
+  cycle: string,
+  parameters: binaryen.Type,
+  none: binaryen.Type,
+): Body {
   const { module, program, sinks, i32 } = emission;
   const statements: binaryen.ExpressionRef[] = [];
   const add = (name: string, body: binaryen.ExpressionRef[], localCount: number): void => {
@@ -116,7 +137,7 @@ function callCycle(emission: Emission, parameters: binaryen.Type, none: binaryen
   for (let b = 0; b + 1 < program.blockStart.length; b++) {
     const block = new BlockEmitter(emission, b, PARAMETERS, 3);
     block.emit();
-    add(`block${b}`, block.statements, block.localCount);
+    add(`${cycle}_block${b}`, block.statements, block.localCount);
   }
   for (let from = 0; from < sinks.copies.length; from += COPIES_IN_BLOCK) {
     // Beyond the last operation, a block has none of its own and only copies.
@@ -124,11 +145,11 @@ function callCycle(emission: Emission, parameters: binaryen.Type, none: binaryen
     for (const [value, offset] of sinks.copies.slice(from, from + COPIES_IN_BLOCK)) {
       block.copy(value, offset);
     }
-    add(`copies${from}`, block.statements, block.localCount);
+    add(`${cycle}_copies${from}`, block.statements, block.localCount);
   }
   const updates = emitUpdates(emission, PARAMETERS);
   for (let from = 0; from < updates.length; from += UPDATES_IN_BLOCK) {
-    add(`updates${from}`, updates.slice(from, from + UPDATES_IN_BLOCK), 3);
+    add(`${cycle}_updates${from}`, updates.slice(from, from + UPDATES_IN_BLOCK), 3);
   }
   return { statements, localCount: RunLocal.Free };
 }

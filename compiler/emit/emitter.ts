@@ -1,12 +1,12 @@
 import { Worker } from 'node:worker_threads';
 import type { ModelLayout } from '../../runtime/layout.js';
 import type { WasmModel } from '../../runtime/wasmModel.js';
-import type { Program } from '../program/program.js';
+import type { CyclePrograms } from '../program/program.js';
 import { emitModel, loadBinaryen } from './emitModel.js';
 
 /** Turns programs into models; gets ready as soon as it is made. */
 export interface Emitter {
-  emit(program: Program, layout: ModelLayout): Promise<WasmModel>;
+  emit(programs: CyclePrograms, layout: ModelLayout): Promise<WasmModel>;
   /** Lets go of what it holds. */
   close(): Promise<void>;
 }
@@ -24,7 +24,7 @@ export function startEmitter(): Emitter {
 export function localEmitter(): Emitter {
   const binaryen = loadBinaryen();
   return {
-    emit: async (program, layout) => emitModel(await binaryen, program, layout),
+    emit: async (programs, layout) => emitModel(await binaryen, programs, layout),
     close: async () => undefined,
   };
 }
@@ -36,12 +36,12 @@ class ThreadEmitter implements Emitter {
     this.#worker.unref();
   }
 
-  emit(program: Program, layout: ModelLayout): Promise<WasmModel> {
+  emit(programs: CyclePrograms, layout: ModelLayout): Promise<WasmModel> {
     const { promise, resolve, reject } = withResolvers<WasmModel>();
     this.#worker.ref();
     this.#worker.once('message', resolve);
     this.#worker.once('error', reject);
-    this.#worker.postMessage({ program, layout });
+    this.#worker.postMessage({ programs, layout });
     return promise.finally(() => this.#worker.unref());
   }
 

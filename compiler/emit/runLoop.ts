@@ -1,5 +1,5 @@
 import type binaryen from 'binaryen';
-import type { Emission, Pointers } from './blockEmitter.js';
+import type { Pointers } from './blockEmitter.js';
 
 /** Locals of the exported `run`, parameters first. */
 export const RunLocal = {
@@ -11,8 +11,10 @@ export const RunLocal = {
   Current: 5,
   Next: 6,
   Left: 7,
+  /** Which cycle's code is run, where there are several. */
+  Shape: 8,
   /** First number free for what the loop's body needs. */
-  Free: 8,
+  Free: 9,
 } as const;
 
 /** Where the cycle's code finds its addresses when it stands inside `run`. */
@@ -22,29 +24,47 @@ export const runPointers: Pointers = {
   row: RunLocal.Row,
 };
 
+/** The code of one cycle. */
+export interface CycleCode {
+  readonly statements: binaryen.ExpressionRef[];
+  /** Locals in use, those of `run` included. */
+  readonly localCount: number;
+  /** Offsets in the next area of the bytes that must be 0. */
+  readonly faults: readonly number[];
+}
+
+/** Addresses that `run` works with. */
+export interface RunPlace {
+  /** Sum of the addresses of the two areas. */
+  readonly areaSum: number;
+  /** Where the number of each cycle's code stands, a byte each, and how many there are. */
+  readonly patternAt: number;
+  readonly patternLength: number;
+}
+
 /**
- * The body of the exported `run`: the cycle's code in a loop, the two areas changing roles after
- * each cycle, so that no state is copied. Ends early, with the number of cycles done, where a fault byte is
- * set.
+ * The body of the exported `run`: the cycles' code in a loop, the two areas changing roles after
+ * each cycle, so that no state is copied. Ends early, with the number of cycles done, where a fault
+ * byte is set.
  */
 export function runLoop(
-  emission: Emission,
-  areaSum: number,
-  cycle: readonly binaryen.ExpressionRef[],
+  module: binaryen.Module,
+  type: binaryen.Type,
+  place: RunPlace,
+  cycles: readonly CycleCode[],
 ): binaryen.ExpressionRef {
-  const { module, i32: type } = emission;
-  const { i32, local } = module;
+  const { i32, local, global } = module;
   const get = (number: number) => local.get(number, type);
   const advance = (number: number, step: number) =>
     local.set(number, i32.add(get(number), get(step)));
   const finish = () => [
-    module.global.set('current', get(RunLocal.Current)),
+    global.set('current', get(RunLocal.Current)),
     module.return(i32.sub(get(RunLocal.Cycles), get(RunLocal.Left))),
   ];
-  const other = () => i32.sub(i32.const(areaSum), get(RunLocal.Current));
+  const other = () => i32.sub(i32.const(place.areaSum), get(RunLocal.Current));
+  const coded = withFaults(module, type, cycles, () => module.block(null, finish()));
   const body = module.block(null, [
-    ...cycle,
-    ...faultChecks(emission, () => module.block(null, finish())),
+    ...(coded.length === 1 ? coded[0]! : chosenCycle(module, type, place, coded)),
     local.set(RunLocal.Current, get(RunLocal.Next)),
     local.set(RunLocal.Next, other()),
     advance(RunLocal.Row, RunLocal.RowStep),
@@ -53,7 +73,7 @@ export function runLoop(
     module.br('cycle', get(RunLocal.Left)),
   ]);
   return module.block(null, [
-    local.set(RunLocal.Current, module.global.get('current', type)),
+    local.set(RunLocal.Current, global.get('current', type)),
     local.set(RunLocal.Next, other()),
     local.set(RunLocal.Left, get(RunLocal.Cycles)),
     module.if(get(RunLocal.Left), module.loop('cycle', body)),
@@ -61,14 +81,42 @@ export function runLoop(
   ]);
 }
 
-function faultChecks(
-  { module, program, area, i32: type }: Emission,
+// Each cycle's code with a check behind it; faults are numbered through all cycles.
+function withFaults(
+  module: binaryen.Module,
+  type: binaryen.Type,
+  cycles: readonly CycleCode[],
   leave: () => binaryen.ExpressionRef,
+): binaryen.ExpressionRef[][] {
+  const { i32, local, global } = module;
+  let number = 0;
+  return cycles.map(({ statements, faults }) => [
+    ...statements,
+    ...faults.map((offset) => {
+      const flag = i32.load8_u(offset, 1, local.get(RunLocal.Next, type), '0');
+      const found = module.block(null, [global.set('fault', i32.const(number++)), leave()]);
+      return module.if(i32.and(flag, i32.const(1)), found);
+    }),
+  ]);
+}
+
+// The pattern tells which cycle is next. Its place is kept between calls in a global.
+function chosenCycle(
+  module: binaryen.Module,
+  type: binaryen.Type,
+  { patternAt, patternLength }: RunPlace,
+  cycles: readonly binaryen.ExpressionRef[][],
 ): binaryen.ExpressionRef[] {
-  const { i32, local } = module;
-  return program.faults.map((_, fault) => {
-    const flag = i32.load8_u(area.faults + fault, 1, local.get(RunLocal.Next, type), '0');
-    const found = module.block(null, [module.global.set('fault', i32.const(fault)), leave()]);
-    return module.if(i32.and(flag, i32.const(1)), found);
-  });
+  const { i32, local, global } = module;
+  const position = () => global.get('position', type);
+  const following = i32.add(position(), i32.const(1));
+  const isLast = i32.eq(position(), i32.const(patternLength - 1));
+  const branches = cycles.map((cycle, index) =>
+    module.if(i32.eq(local.get(RunLocal.Shape, type), i32.const(index)), module.block(null, cycle)),
+  );
+  return [
+    local.set(RunLocal.Shape, i32.load8_u(patternAt, 1, position(), '0')),
+    ...branches,
+    global.set('position', module.select(isLast, i32.const(0), following)),
+  ];
 }

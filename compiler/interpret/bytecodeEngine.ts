@@ -1,73 +1,36 @@
-import { type Engine, RunFault } from '../../runtime/engine.js';
+import type { Engine } from '../../runtime/engine.js';
 import { checkRun } from '../../runtime/engineArguments.js';
 import { type ModelLayout, rowStride } from '../../runtime/layout.js';
-import { loadStates, showStates } from '../../runtime/stateBits.js';
-import { UPDATE_WIDTH } from '../logic/logic.js';
-import {
-  FIRST_INPUT,
-  firstResult,
-  firstState,
-  type Program,
-  ProgramOp,
-} from '../program/program.js';
-import { bytecodeOf } from './bytecode.js';
+import { loadStates, type StateMap, showStates } from '../../runtime/stateBits.js';
+import type { CyclePrograms } from '../program/program.js';
+import { BytecodeProgram } from './bytecodeProgram.js';
 
 /**
- * Runs a program operation by operation over an array of values: the levelized interpreter, which
+ * Runs programs operation by operation over an array of values: the levelized interpreter, which
  * generated code is compared with.
  */
 export class BytecodeEngine implements Engine {
   readonly layout: ModelLayout;
-  readonly #program: Program;
-  readonly #runs: Uint32Array;
-  /**
-   * The values, then the operands of all operations. In one array, because the engine below checks
-   * and looks up each array again in each turn of a loop.
-   */
-  readonly #memory: Int32Array;
-  readonly #firstOperand: number;
-  readonly #outputs: Uint32Array;
-  readonly #next: Uint32Array;
-  readonly #faults: Uint32Array;
-  readonly #committed: Int32Array;
-  /** State bits that stand in no update. */
-  readonly #single: Uint32Array;
-  /** Per update: first state bit, the memory places of enable and gate, and of what is copied. */
-  readonly #updates: Int32Array;
+  readonly #states: StateMap;
+  readonly #programs: readonly BytecodeProgram[];
+  readonly #pattern: Uint8Array;
+  #position = 0;
 
-  constructor(program: Program, layout: ModelLayout) {
-    const { runs, operands, renumbered } = bytecodeOf(program);
+  constructor({ programs, pattern }: CyclePrograms, layout: ModelLayout) {
     this.layout = layout;
-    this.#program = program;
-    this.#runs = runs;
-    this.#firstOperand = renumbered.length;
-    this.#memory = new Int32Array(renumbered.length + operands.length);
-    this.#memory[1] = 1;
-    this.#memory.set(operands, renumbered.length);
-    this.#outputs = program.outputs.map((value) => renumbered[value]!);
-    this.#next = program.next.map((value) => renumbered[value]!);
-    this.#faults = Uint32Array.from(program.faults, ({ when }) => renumbered[when]!);
-    this.#committed = new Int32Array(program.stateCount);
-    this.#single = singleBits(program);
-    this.#updates = Int32Array.from(
-      program.updates.flatMap(({ first, enable, gate, from }) => [
-        first,
-        renumbered[enable]!,
-        renumbered[gate]!,
-        from < 0 ? -1 : firstState(program) + from,
-      ]),
-    );
+    this.#states = programs[0]!;
+    this.#programs = programs.map((program) => new BytecodeProgram(program));
+    this.#pattern = pattern;
   }
 
   reset(state: Uint8Array): void {
-    const bits = loadStates(this.layout, this.#program, state);
-    this.#memory.set(bits, firstState(this.#program));
+    const bits = loadStates(this.layout, this.#states, state);
+    this.#position = 0;
+    this.#next.stateBits.set(bits);
   }
 
   state(): Uint8Array {
-    const first = firstState(this.#program);
-    const bits = this.#memory.subarray(first, first + this.#program.stateCount);
-    return showStates(this.layout, this.#program, bits);
+    return showStates(this.layout, this.#states, this.#next.stateBits);
   }
 
   run(
@@ -80,109 +43,16 @@ export class BytecodeEngine implements Engine {
     const { threeValued, outputs } = this.layout;
     const responseStride = rowStride(outputs, threeValued);
     for (let cycle = 0; cycle < cycles; cycle++) {
-      this.#loadInputs(stimulus, cycle * stimulusStride);
-      this.#step();
-      this.#checkFaults(cycle);
-      if (response !== undefined) this.#packOutputs(response, cycle * responseStride);
-      this.#commit();
+      const program = this.#next;
+      program.run(cycle, stimulus, cycle * stimulusStride, response, cycle * responseStride);
+      this.#position = (this.#position + 1) % this.#pattern.length;
+      // Each program has values of its own: the state moves on to the next cycle's.
+      if (this.#next !== program) this.#next.stateBits.set(program.stateBits);
     }
   }
 
-  #loadInputs(stimulus: Uint32Array, at: number): void {
-    const memory = this.#memory;
-    const count = this.#program.inputCount;
-    for (let bit = 0; bit < count; bit++) {
-      memory[FIRST_INPUT + bit] = (stimulus[at + (bit >>> 5)]! >>> (bit & 31)) & 1;
-    }
+  /** The program of the next cycle, which holds the state. */
+  get #next(): BytecodeProgram {
+    return this.#programs[this.#pattern[this.#position]!]!;
   }
-
-  #step(): void {
-    const memory = this.#memory;
-    const runs = this.#runs;
-    let at = this.#firstOperand;
-    let result = firstResult(this.#program);
-    for (let run = 0; run < runs.length; run += 2) {
-      const end = result + runs[run + 1]!;
-      switch (runs[run]) {
-        case ProgramOp.And:
-          for (; result < end; result++, at += 2) {
-            memory[result] = memory[memory[at]!]! & memory[memory[at + 1]!]!;
-          }
-          break;
-        case ProgramOp.Or:
-          for (; result < end; result++, at += 2) {
-            memory[result] = memory[memory[at]!]! | memory[memory[at + 1]!]!;
-          }
-          break;
-        case ProgramOp.Xor:
-          for (; result < end; result++, at += 2) {
-            memory[result] = memory[memory[at]!]! ^ memory[memory[at + 1]!]!;
-          }
-          break;
-        case ProgramOp.Not:
-          for (; result < end; result++, at++) memory[result] = memory[memory[at]!]! ^ 1;
-          break;
-        default:
-          // Without a branch, which would be mispredicted half the time.
-          for (; result < end; result++, at += 3) {
-            const zero = memory[memory[at + 1]!]!;
-            const difference = zero ^ memory[memory[at + 2]!]!;
-            memory[result] = zero ^ (memory[memory[at]!]! & difference);
-          }
-      }
-    }
-  }
-
-  #packOutputs(response: Uint32Array, at: number): void {
-    const outputs = this.#outputs;
-    const memory = this.#memory;
-    for (let first = 0; first < outputs.length; first += 32) {
-      const end = Math.min(first + 32, outputs.length);
-      let word = 0;
-      for (let bit = first; bit < end; bit++) word |= memory[outputs[bit]!]! << (bit - first);
-      response[at + (first >>> 5)] = word;
-    }
-  }
-
-  #commit(): void {
-    const next = this.#next;
-    const memory = this.#memory;
-    const committed = this.#committed;
-    const single = this.#single;
-    for (let i = 0; i < single.length; i++) committed[single[i]!] = memory[next[single[i]!]!]!;
-    for (let at = 0; at < this.#updates.length; at += 4) this.#update(at);
-    memory.set(committed, firstState(this.#program));
-  }
-
-  #update(at: number): void {
-    const memory = this.#memory;
-    const committed = this.#committed;
-    const first = this.#updates[at]!;
-    const gate = -(memory[this.#updates[at + 2]!]! & 1);
-    const from = this.#updates[at + 3]!;
-    if ((memory[this.#updates[at + 1]!]! & 1) === 0) {
-      const old = firstState(this.#program) + first;
-      for (let i = 0; i < UPDATE_WIDTH; i++) committed[first + i] = memory[old + i]! & gate;
-    } else if (from >= 0) {
-      for (let i = 0; i < UPDATE_WIDTH; i++) committed[first + i] = memory[from + i]! & gate;
-    } else {
-      const next = this.#next;
-      for (let i = 0; i < UPDATE_WIDTH; i++) {
-        committed[first + i] = memory[next[first + i]!]! & gate;
-      }
-    }
-  }
-
-  #checkFaults(cycle: number): void {
-    const fault = this.#faults.findIndex((value) => this.#memory[value] !== 0);
-    if (fault >= 0) throw new RunFault(cycle, this.#program.faults[fault]!.message);
-  }
-}
-
-function singleBits({ stateCount, states, updates }: Program): Uint32Array {
-  const isUpdated = new Uint8Array(stateCount);
-  for (const { first } of updates) isUpdated.fill(1, first, first + UPDATE_WIDTH);
-  return Uint32Array.from(states.keys()).filter(
-    (bit) => isUpdated[bit] === 0 && states[bit]!.role !== 'unused',
-  );
 }

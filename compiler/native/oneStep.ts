@@ -12,8 +12,12 @@ import type { Design } from '../compile.js';
  * It is where all registers capture at the same edge of clocks that reach them through buffers and
  * inverters alone, where there are no latches, and where set and reset come from data inputs alone.
  */
-export function obstacleToOneStep({ circuit, clocks, layout }: Design): string | undefined {
+export function obstacleToOneStep(design: Design): string | undefined {
+  const { circuit, clocks, layout, schedule } = design;
   if (layout.threeValued) return 'the run is three-valued';
+  // Sampling, the active edge and the return of all clocks.
+  const isPlain = schedule.shapes.length === 1 && schedule.shapes[0]!.steps.length === 3;
+  if (!isPlain) return 'the clocks tick each at its own pace';
   const { registers, latches } = circuit;
   if (latches.count > 0) {
     return `there are latches: ${describeNets(circuit, latches.output, 1)}`;

@@ -13,17 +13,18 @@ const SWEEPS = 16;
  *
  * Exclusive-ors and multiplexers take the polarity that falls out of their operands; and-nodes and
  * state bits are free. A local search turns over one at a time, with all that follows from it, and
- * keeps what lowers the number of nodes that are needed inverted. Returns 1 per inverted node.
+ * keeps what lowers the number of nodes that are needed inverted. Returns 1 per inverted node. With
+ * `keepsStates` no state bit is inverted, since other graphs share them.
  */
-export function choosePolarity(logic: Logic): Uint8Array {
+export function choosePolarity(logic: Logic, keepsStates = false): Uint8Array {
   const edges = new PolarityEdges(logic);
-  const gated = gatedStates(logic);
+  const fixed = keepsStates ? new Uint8Array(logic.states.length).fill(1) : gatedStates(logic);
   const sweeps = Math.min(SWEEPS, Math.max(2, Math.floor(TRIALS / logic.nodeCount)));
   for (let sweep = 0; sweep < sweeps; sweep++) {
     let gained = false;
     for (let node = 1; node < logic.nodeCount; node++) {
       const op = logic.op[node]!;
-      if (op !== LogicOp.And && (op !== LogicOp.State || gated[logic.a[node]!] === 1)) continue;
+      if (op !== LogicOp.And && (op !== LogicOp.State || fixed[logic.a[node]!] === 1)) continue;
       const turned = cascade(edges, node);
       if (turned === undefined) continue;
       const before = edges.cost;

@@ -4,14 +4,15 @@ import { sinksOf } from '../logic/sinks.js';
 /**
  * Removes nodes that nothing reads, and state bits that only remember an input nobody asks for.
  *
- * Registers and latches stay, read or not: their state can be looked at. Order of nodes is kept.
+ * Registers and latches stay, read or not: their state can be looked at. With `keepsStates`, all
+ * state bits stay, since other graphs share them. Order of nodes is kept.
  */
-export function compact(logic: Logic): Logic {
+export function compact(logic: Logic, keepsStates = false): Logic {
   const live = new Uint8Array(logic.nodeCount);
   live[0] = 1;
   // Once state bits have been laid side by side, none of them goes any more.
   const keptState = logic.states.map(
-    ({ role }) => role === 'value' || role === 'zero' || logic.updates.length > 0,
+    ({ role }) => keepsStates || role === 'value' || role === 'zero' || logic.updates.length > 0,
   );
   const next = logic.next.filter((_, bit) => keptState[bit]);
   markFrom(logic, live, sinksOf({ ...logic, next }));

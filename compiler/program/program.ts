@@ -56,3 +56,14 @@ export const firstState = (program: Program): number => FIRST_INPUT + program.in
 
 /** Value number of the first operation's result. */
 export const firstResult = (program: Program): number => firstState(program) + program.stateCount;
+
+/**
+ * The programs of a circuit's cycles. Where all clocks tick together there is one; with clocks of
+ * their own pace there is one for each different cycle, all with the same inputs, states and
+ * outputs.
+ */
+export interface CyclePrograms {
+  readonly programs: readonly Program[];
+  /** Which program each cycle runs; after the last comes the first again. */
+  readonly pattern: Uint8Array;
+}

@@ -3,11 +3,13 @@ import type { Diagnostics } from '../diagnostics/diagnostics.js';
 import type { Source } from '../diagnostics/source.js';
 import { SourceMap } from '../diagnostics/sourceMap.js';
 import { readBench } from './bench/readBench.js';
+import { libertyCells } from './liberty/libertyCells.js';
+import { readLiberty } from './liberty/readLiberty.js';
 import { elaborate } from './verilog/elaborate/elaborate.js';
 import { parseVerilog } from './verilog/parse.js';
 import type { PreprocessOptions } from './verilog/preprocess.js';
 
-/** What `readNetlist` may be told; all but `top` is for Verilog alone. */
+/** What `readNetlist` may be told; all but `top` is for Verilog, `readInclude` for Liberty too. */
 export interface NetlistReadOptions extends PreprocessOptions {
   /** Name of the top module; chosen by itself where only one can be meant. */
   readonly top?: string;
@@ -22,8 +24,9 @@ const formOfEnding: Readonly<Record<string, 'verilog' | 'bench' | 'liberty'>> = 
 };
 
 /**
- * Reads netlist files, together one design, into a circuit: `.v` and `.vh` Verilog, `.bench` the
- * ISCAS'89 text form, which stands alone.
+ * Reads netlist files, together one design, into a circuit: `.v` and `.vh` Verilog, `.lib` Liberty
+ * cell libraries for it, `.bench` the ISCAS'89 text form, which stands alone. Where several files
+ * model a cell, the first one decides, and a note says so.
  *
  * Returns undefined if anything is wrong, having reported it. Throws RangeError without sources.
  */
@@ -59,26 +62,31 @@ function readVerilog(
 ): Circuit | undefined {
   const sourceMap = new SourceMap();
   const errors = errorsIn(diagnostics);
-  const syntax = parseVerilog(sources, options, sourceMap, diagnostics);
+  const isLibrary = (source: Source): boolean => formOf(source, diagnostics) === 'liberty';
+  const netlists = sources.filter((source) => !isLibrary(source));
+  const syntax = parseVerilog(netlists, options, sourceMap, diagnostics);
+  const libraries = sources
+    .filter(isLibrary)
+    .map((source) => readLiberty(source, options, sourceMap, diagnostics));
   // The tree of a text with errors has gaps; what they would lead to says nothing of the text.
   if (errorsIn(diagnostics) > errors) return undefined;
   const { top } = options;
-  return elaborate(syntax, top === undefined ? {} : { top }, sourceMap, diagnostics);
+  const cells = libertyCells(libraries, syntax.names, sources, sourceMap);
+  const elaborateOptions = { cells, ...(top !== undefined && { top }) };
+  return elaborate(syntax, elaborateOptions, sourceMap, diagnostics);
 }
 
 function errorsIn({ list }: Diagnostics): number {
   return list.reduce((count, { severity }) => (severity === 'error' ? count + 1 : count), 0);
 }
 
-function formOf(source: Source, diagnostics: Diagnostics): 'verilog' | 'bench' | undefined {
+function formOf(source: Source, diagnostics: Diagnostics) {
   const ending = /\.[^./\\]*$/.exec(source.path)?.[0].toLowerCase() ?? '';
   const form = formOfEnding[ending];
-  if (form === 'verilog' || form === 'bench') return form;
+  if (form !== undefined) return form;
   const message =
-    form === 'liberty'
-      ? 'Liberty files are not read; give the cells as Verilog modules (.v)'
-      : `the ending ${ending === '' ? 'is missing and' : ending} tells no form; ` +
-        'rename it to .v for Verilog or .bench for the ISCAS text form';
+    `the ending ${ending === '' ? 'is missing and' : ending} tells no form; rename it ` +
+    'to .v for Verilog, .lib for Liberty or .bench for the ISCAS text form';
   reportFile(source, message, diagnostics);
   return undefined;
 }

@@ -1,6 +1,6 @@
 import type { Engine } from '../../runtime/engine.js';
 import { WasmEngine } from '../../runtime/wasmEngine.js';
-import { type Design, programOf } from '../compile.js';
+import { type Design, programsOf } from '../compile.js';
 import { emitModel, loadBinaryen } from '../emit/emitModel.js';
 import { BytecodeEngine } from '../interpret/bytecodeEngine.js';
 import { ReferenceEngine } from '../interpret/reference/referenceEngine.js';
@@ -25,10 +25,10 @@ export async function interpreters(design: Design, rows: BenchRows): Promise<Con
   // Loading the library is no part of compiling, and takes longer than most circuits.
   const binaryen = await loadBinaryen();
   const start = performance.now();
-  const program = programOf(design);
+  const programs = programsOf(design);
   const passesMs = performance.now() - start;
-  const wasm = await timed(() => WasmEngine.create(emitModel(binaryen, program, design.layout)));
-  const bytecode = await timed(() => new BytecodeEngine(program, design.layout));
+  const wasm = await timed(() => WasmEngine.create(emitModel(binaryen, programs, design.layout)));
+  const bytecode = await timed(() => new BytecodeEngine(programs, design.layout));
   const reference = await timed(() => new ReferenceEngine(design.circuit, design));
   return [
     contestant('wasm', wasm.engine, passesMs + wasm.ms, rows),

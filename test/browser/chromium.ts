@@ -2,19 +2,12 @@ import { spawnSync } from 'node:child_process';
 import bundled from '@sparticuz/chromium';
 import { type Browser, chromium } from 'playwright-core';
 
-/** Unpacks the Chromium of the development dependencies into a folder; returns its path. */
-export async function unpackChromium(folder: string): Promise<string> {
-  // The package unpacks to the temporary folder and takes what it finds there for whole, which an
-  // interrupted run or one at the same time would belie in a folder that is shared.
-  const before = process.env.TMPDIR;
-  process.env.TMPDIR = folder;
-  try {
-    return await bundled.executablePath();
-  } finally {
-    if (before === undefined) delete process.env.TMPDIR;
-    else process.env.TMPDIR = before;
-  }
-}
+/**
+ * Unpacks the Chromium of the development dependencies to the temporary folder; returns its path.
+ *
+ * What stands there under its name is taken for whole, so the folder must be the caller's own.
+ */
+export const unpackChromium = (): Promise<string> => bundled.executablePath();
 
 /**
  * Starts a Chromium without a window. It sends everything that is not on the loopback interface

@@ -3,7 +3,6 @@ import { compile, type Design } from '../../compiler/compile.js';
 import { createEngine, type EngineName } from '../../compiler/engines.js';
 import { Signature } from '../../runtime/signature.js';
 import { randomStimulus, runBlocksSync } from '../../runtime/stream.js';
-import type { WasmModel } from '../../runtime/wasmModel.js';
 
 /** A design, and the random run that every engine makes of it. */
 export interface Run {
@@ -12,31 +11,22 @@ export interface Run {
   readonly cycles: number;
 }
 
-/** A run as it travels to a browser: nothing but JSON. */
+/** A run as it travels to a browser. */
 export interface Job {
-  /** The compiled model, its byte arrays in base64. */
-  readonly model: Omit<WasmModel, 'bytes' | 'stateInverted'> & {
-    readonly bytes: string;
-    readonly stateInverted: string;
-  };
+  /** The compiled model as JSON; an array of bytes is an object `{base64}`. */
+  readonly model: string;
   /** Power-up value of every state element. */
   readonly state: readonly number[];
   readonly seed: number;
   readonly cycles: number;
 }
 
-const base64 = (bytes: Uint8Array): string => Buffer.from(bytes).toString('base64');
-
 /** Compiles the design of a run and packs both for the way. */
 export async function jobOf({ design, seed, cycles }: Run): Promise<Job> {
-  const model = await compile(design);
-  const { bytes, stateInverted } = model;
-  return {
-    model: { ...model, bytes: base64(bytes), stateInverted: base64(stateInverted) },
-    state: Array.from(powerUp(design)),
-    seed,
-    cycles,
-  };
+  const model = JSON.stringify(await compile(design), (_, value: unknown) =>
+    value instanceof Uint8Array ? { base64: Buffer.from(value).toString('base64') } : value,
+  );
+  return { model, state: Array.from(powerUp(design)), seed, cycles };
 }
 
 /** The signature of a run on one of the engines, here in Node and from the sources. */
@@ -49,6 +39,13 @@ export async function signatureInNode(run: Run, name: EngineName): Promise<strin
     signature.add(block.rows, block.cycles);
   }
   return signature.digits();
+}
+
+/** The signature of a job here in Node, by the built runtime and the function that pages use. */
+export async function signatureOfBuilt(job: Job): Promise<string> {
+  const built = await import(new URL('../../dist/runtime/index.js', import.meta.url).href);
+  const { signatureOf } = await import(new URL('page/signatureOf.mjs', import.meta.url).href);
+  return signatureOf(built, job);
 }
 
 const powerUp = ({ circuit, layout }: Design): Uint8Array =>

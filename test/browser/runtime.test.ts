@@ -1,24 +1,14 @@
-import {
-  constants,
-  copyFileSync,
-  mkdtempSync,
-  openSync,
-  readSync,
-  rmSync,
-  writeSync,
-} from 'node:fs';
+import { mkdtempSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { pathToFileURL } from 'node:url';
 import type { Browser, Page } from 'playwright-core';
-import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { afterAll, beforeAll, describe, expect, it, vi } from 'vitest';
 import { designOf } from '../../compiler/compile.js';
-import { engineNames } from '../../compiler/engines.js';
 import { ownDesign } from '../support/ownCircuits.js';
 import { smallCircuit } from '../support/smallCircuit.js';
-import { buildRuntime } from './buildRuntime.js';
 import { startChromium, unpackChromium } from './chromium.js';
-import { type Job, jobOf, type Run, signatureInNode } from './jobs.js';
+import { type Job, jobOf, type Run, signatureInNode, signatureOfBuilt } from './jobs.js';
+import { copyLacking } from './lackingCopy.js';
 import { fence, type Loopback, servePage } from './servers.js';
 
 declare const signatureInPage: (job: Job) => Promise<string>;
@@ -44,31 +34,34 @@ const runs: readonly (readonly [name: string, run: Run])[] = [
 ];
 
 let folder = '';
-let runtime = '';
 let executable = '';
-let proxy: Loopback | undefined;
-let server: Loopback | undefined;
-let browser: Browser | undefined;
+let proxy: Loopback;
+let server: Loopback;
+let browser: Browser;
 let page: Page;
+const closing: (() => Promise<void>)[] = [];
 
 beforeAll(async () => {
   folder = mkdtempSync(join(tmpdir(), 'clockstride-browser-'));
-  executable = await unpackChromium(folder);
-  runtime = buildRuntime(join(folder, 'built'));
+  closing.push(async () => rmSync(folder, { recursive: true }));
+  // What the browser unpacks and leaves goes with the folder.
+  vi.stubEnv('TMPDIR', folder);
+  closing.push(async () => void vi.unstubAllEnvs());
+  executable = await unpackChromium();
   proxy = await fence();
-  server = await servePage(runtime);
+  closing.push(proxy.close);
+  server = await servePage();
+  closing.push(server.close);
   browser = await startChromium(executable, proxy.origin);
+  closing.push(() => browser.close());
   page = await openPage(browser, server.origin);
 });
 
 afterAll(async () => {
-  await browser?.close();
-  await server?.close();
-  await proxy?.close();
-  rmSync(folder, { recursive: true, force: true });
+  for (const close of closing.reverse()) await close();
 });
 
-/** Opens the page that runs jobs; throws what its console says if that is not nothing. */
+/** Opens the page that runs jobs; throws what its console says, if anything. */
 async function openPage(browser: Browser, origin: string): Promise<Page> {
   const opened = await browser.newPage();
   const problems: string[] = [];
@@ -80,23 +73,48 @@ async function openPage(browser: Browser, origin: string): Promise<Page> {
 }
 
 describe('the built runtime', () => {
-  it.each(runs)(
-    'signs %s in a page and in a worker as every engine does in Node',
-    async (_, run) => {
-      const job = await jobOf(run);
-      const { signatureOf } = await import('./page/signatureOf.mjs');
-      const built = await import(pathToFileURL(join(runtime, 'index.js')).href);
-      const signatures: Record<string, string> = {
-        page: await page.evaluate((sent) => signatureInPage(sent), job),
-        worker: await page.evaluate((sent) => signatureInWorker(sent), job),
-        built: await signatureOf(built, job),
-      };
-      for (const name of engineNames) signatures[name] = await signatureInNode(run, name);
-      const { reference } = signatures;
-      expect(reference).not.toBe('0'.repeat(16));
-      expect(signatures).toEqual(
-        Object.fromEntries(Object.keys(signatures).map((where) => [where, reference])),
-      );
-    },
-  );
+  it.each(runs)('signs %s in a browser as all engines do in Node', async (_, run) => {
+    const job = await jobOf(run);
+    const signatures = {
+      page: await page.evaluate((sent) => signatureInPage(sent), job),
+      worker: await page.evaluate((sent) => signatureInWorker(sent), job),
+      built: await signatureOfBuilt(job),
+      wasm: await signatureInNode(run, 'wasm'),
+      bytecode: await signatureInNode(run, 'bytecode'),
+    };
+    const expected = await signatureInNode(run, 'reference');
+    expect(expected).not.toBe('0'.repeat(16));
+    for (const [place, signature] of Object.entries(signatures)) {
+      expect(signature, `the signature of ${place}`).toBe(expected);
+    }
+  });
+
+  it('loads nothing of its part for Node', () => {
+    const modules = server.requests.filter((path) => path.startsWith('/runtime/'));
+    expect(modules).toContain('/runtime/index.js');
+    expect(modules.filter((path) => path.startsWith('/runtime/node/'))).toEqual([]);
+  });
+});
+
+describe('the browser', () => {
+  it('asks for nothing beyond the loopback interface', async () => {
+    expect(proxy.requests).toEqual([]);
+    // RFC 2606 keeps this domain for names that never exist. That the attempt is seen shows that
+    // others would have been.
+    const outside = 'http://outside.invalid/';
+    const other = await browser.newPage();
+    await other.goto(outside);
+    await other.close();
+    expect(proxy.requests).toEqual([outside]);
+  });
+
+  it('is not started where a shared library is missing, and the message names it', async () => {
+    const { copy, library } = copyLacking(executable, join(folder, 'lacking'));
+    await expect(startChromium(copy, proxy.origin)).rejects.toThrow(`lacks ${library};`);
+  });
+
+  it('says why it does not start for another reason', async () => {
+    const absent = join(folder, 'absent');
+    await expect(startChromium(absent, proxy.origin)).rejects.toThrow(/not start here.*absent/s);
+  });
 });

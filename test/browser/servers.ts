@@ -2,6 +2,7 @@ import { readFile } from 'node:fs/promises';
 import { createServer, type Server } from 'node:http';
 import type { AddressInfo } from 'node:net';
 import { join } from 'node:path';
+import { fileURLToPath } from 'node:url';
 
 // As strict as a page can be that compiles WebAssembly: nothing foreign, inline or evaluated.
 const policy = "default-src 'none'; script-src 'self' 'wasm-unsafe-eval'; worker-src 'self'";
@@ -18,12 +19,13 @@ export interface Loopback {
   close(): Promise<void>;
 }
 
-/** Serves the page that runs jobs at `/`, its modules below `/page/`, a runtime's at `/runtime/`. */
-export async function servePage(runtime: string): Promise<Loopback> {
-  const folders = new Map([
-    ['runtime', runtime],
-    ['page', new URL('page/', import.meta.url).pathname],
-  ]);
+const folders = new Map([
+  ['runtime', fileURLToPath(new URL('../../dist/runtime/', import.meta.url))],
+  ['page', fileURLToPath(new URL('page/', import.meta.url))],
+]);
+
+/** Serves the page that runs jobs at `/`; below `/page/` its modules, `/runtime/` the built ones. */
+export async function servePage(): Promise<Loopback> {
   const requests: string[] = [];
   const server = createServer(async ({ url = '' }, response) => {
     requests.push(url);
@@ -32,13 +34,11 @@ export async function servePage(runtime: string): Promise<Loopback> {
       response.setHeader('Content-Type', 'text/html').end(html);
       return;
     }
-    const [, folder, file] = /^\/(\w+)\/(\w+\.m?js)$/.exec(url) ?? [];
-    try {
-      const text = await readFile(join(folders.get(folder ?? '') ?? '', file ?? ''));
-      response.setHeader('Content-Type', 'text/javascript').end(text);
-    } catch {
-      response.writeHead(404).end();
-    }
+    const [, name = '', file = ''] = /^\/(\w+)\/(\w+\.m?js)$/.exec(url) ?? [];
+    const folder = folders.get(name);
+    const text = folder && (await readFile(join(folder, file)).catch(() => undefined));
+    if (text) response.setHeader('Content-Type', 'text/javascript').end(text);
+    else response.writeHead(404).end();
   });
   return started(server, requests);
 }

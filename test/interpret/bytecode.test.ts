@@ -1,13 +1,15 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { designOf, programOf } from '../../compiler/compile.js';
+import { designOf, programsOf } from '../../compiler/compile.js';
 import { bytecodeOf } from '../../compiler/interpret/bytecode.js';
 import { firstResult, operandCount, type Program } from '../../compiler/program/program.js';
 import { randomCircuit } from '../support/randomCircuit.js';
 
 const SEED = 20260203;
 
-const programs = randomCircuit({ maxGates: 120 }).map((circuit) => programOf(designOf(circuit)));
+const programs = randomCircuit({ maxGates: 120 }).map(
+  (circuit) => programsOf(designOf(circuit)).programs[0]!,
+);
 
 const holds = (law: (program: Program) => void) =>
   fc.assert(fc.property(programs, law), { seed: SEED, numRuns: 60 });

@@ -16,7 +16,7 @@ const pathOf = (path: string) => fileURLToPath(new URL(`../../${path}`, import.m
 /**
  * Builds `dist/` once before all tests, so that what they start is what the sources say.
  *
- * A failure is handed to the tests that start the built command, and fails no other.
+ * A failure is handed to the one test that asks for it, so that it fails no other.
  */
 export default async function build({ provide }: TestProject): Promise<void> {
   const cache = pathOf('node_modules/.cache/');

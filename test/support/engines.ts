@@ -1,4 +1,4 @@
-import { compile, type Design, programOf } from '../../compiler/compile.js';
+import { compile, type Design, programsOf } from '../../compiler/compile.js';
 import { localEmitter } from '../../compiler/emit/emitter.js';
 import { BytecodeEngine } from '../../compiler/interpret/bytecodeEngine.js';
 import { ReferenceEngine } from '../../compiler/interpret/reference/referenceEngine.js';
@@ -20,7 +20,7 @@ export async function enginesOf(design: Design): Promise<{
   return {
     reference: new ReferenceEngine(design.circuit, design),
     others: [
-      ['bytecode', new BytecodeEngine(programOf(design), design.layout)],
+      ['bytecode', new BytecodeEngine(programsOf(design), design.layout)],
       ['wasm', await wasmEngineOf(design)],
     ],
   };

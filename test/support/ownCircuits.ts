@@ -11,13 +11,13 @@ import type { Engine } from '../../runtime/engine.js';
 export function ownDesign(name: string, parameters: Readonly<Record<string, number>> = {}): Design {
   const circuit = circuits.find((candidate) => candidate.name === name);
   if (circuit === undefined) throw new RangeError(`there is no circuit ${name}`);
-  return designFrom(`${name}.v`, [...circuit.write(parameters)].join(''));
+  return designFrom(new Source(`${name}.v`, [...circuit.write(parameters)].join('')));
 }
 
-/** Reads a netlist text whose form the path's ending tells; throws for anything reported. */
-export function designFrom(path: string, text: string | Uint8Array): Design {
+/** Reads a netlist into a design; throws for anything the reader reports. */
+export function designFrom(source: Source): Design {
   const diagnostics = new Diagnostics();
-  const circuit = readNetlist([new Source(path, text)], {}, diagnostics);
+  const circuit = readNetlist([source], {}, diagnostics);
   if (circuit === undefined || diagnostics.list.length > 0) throw new InputError(diagnostics.list);
   return designOf(circuit);
 }

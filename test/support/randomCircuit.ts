@@ -15,8 +15,8 @@ export interface RandomCircuitOptions {
   readonly maxGates?: number;
   /** Output ports, each of up to `maxWidth` bits; default 4. */
   readonly maxOutputs?: number;
-  /** Registers on both edges; also behind gating cells; also on the outputs of registers. */
-  readonly clocking?: 'oneEdge' | 'edges' | 'gated' | 'divided';
+  /** A second clock port `clk2`; registers on both edges; also behind gating cells; also on the outputs of registers. */
+  readonly clocking?: 'oneEdge' | 'edges' | 'gated' | 'divided' | 'twoClocks';
   /** Asynchronous set and reset, made of inputs and of registers before, so that none loops. */
   readonly asynchronous?: boolean;
   /** Latches open in either clock phase or by data; their data comes from no other latch. */
@@ -167,6 +167,7 @@ class RecipeBuilder {
   /** Inputs and gates of inputs: what asynchronous controls read. */
   readonly #inputLogic: NetId[] = [];
   #clocks: NetId[] = [];
+  #second: NetId | undefined;
 
   constructor(made: CircuitRecipe) {
     this.#recipe = made;
@@ -176,6 +177,10 @@ class RecipeBuilder {
     const { constants, inputs, registers, latches, gates, laterGates, feedback } = this.#recipe;
     const clk = this.#net('clk');
     this.#builder.input('clk', [clk]);
+    if (this.#recipe.clocking === 'twoClocks') {
+      this.#second = this.#net('clk2');
+      this.#builder.input('clk2', [this.#second]);
+    }
     inputs.forEach((port, i) => {
       this.#addInput(port, `i${i}`);
     });
@@ -256,8 +261,9 @@ class RecipeBuilder {
     const { clocking } = this.#recipe;
     const output = outputs[index]!;
     const earlier = outputs.slice(0, index);
-    // The first register sits on the port itself, so that the port is known as the clock.
-    const clock = index === 0 ? this.#clocks[0]! : oneOf(this.#clocks, register.clock);
+    // The first registers sit on the ports themselves, so that these are known as clocks.
+    const ports = clocking === 'twoClocks' ? 2 : 1;
+    const clock = oneOf(this.#clocks, index < ports ? index : register.clock);
     const edge = clocking === 'oneEdge' ? Edge.Rising : register.edge;
     this.#builder.register({ ...this.#commonPins(register, output, earlier), clock, edge });
   }
@@ -281,6 +287,7 @@ class RecipeBuilder {
     const { clocking } = this.#recipe;
     if (clocking === 'oneEdge') return [clk];
     if (clocking === 'edges') return [clk, notClk];
+    if (this.#second !== undefined) return [clk, this.#second];
     const gated = this.#gatingCell(clk, notClk);
     if (clocking === 'gated') return [clk, notClk, gated];
     return [clk, notClk, gated, ...registers.slice(0, 2)];

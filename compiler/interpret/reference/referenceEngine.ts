@@ -4,6 +4,7 @@ import { type ModelLayout, rowStride } from '../../../runtime/layout.js';
 import type { Circuit } from '../../circuit/circuit.js';
 import { Edge } from '../../circuit/circuit.js';
 import type { ClockPorts } from '../../circuit/clockPorts.js';
+import { type ClockSchedule, togetherSchedule } from '../../circuit/clockSchedule.js';
 import { NO_NET } from '../../circuit/ids.js';
 import { inputRowNets, outputRowNets, stateNets } from '../../circuit/modelLayout.js';
 import { describeNets } from '../../circuit/netPlaces.js';
@@ -17,6 +18,8 @@ import { merge } from './values.js';
 export interface ReferenceModel {
   readonly layout: ModelLayout;
   readonly clocks: ClockPorts;
+  /** All clocks tick together unless given. */
+  readonly schedule?: ClockSchedule;
 }
 
 /**
@@ -49,12 +52,15 @@ export class ReferenceEngine implements Engine {
   readonly #seen: Uint8Array;
   readonly #clockNets: readonly number[];
   readonly #waveLimit: number;
+  readonly #schedule: ClockSchedule;
+  #position = 0;
   #started = false;
 
-  constructor(circuit: Circuit, { layout, clocks }: ReferenceModel) {
+  constructor(circuit: Circuit, { layout, clocks, schedule }: ReferenceModel) {
     this.layout = layout;
     this.#circuit = circuit;
     this.#clocks = clocks.ports;
+    this.#schedule = schedule ?? togetherSchedule(clocks);
     this.#settler = new Settler(circuit, layout.threeValued);
     this.#waveLimit = waveLimit(circuit);
     this.#inputs = inputRowNets(circuit, clocks);
@@ -72,6 +78,7 @@ export class ReferenceEngine implements Engine {
       this.#settler.set(net, state[index]!);
     });
     this.#started = false;
+    this.#position = 0;
   }
 
   state(): Uint8Array {
@@ -89,10 +96,13 @@ export class ReferenceEngine implements Engine {
     let cycle = 0;
     try {
       for (; cycle < cycles; cycle++) {
-        this.#applyInputs(stimulus, cycle * stimulusStride);
-        if (response) this.#sample(response, cycle * responseStride);
-        this.#moveClocks(true);
-        this.#moveClocks(false);
+        const { start, steps } = this.#schedule.shapes[this.#schedule.pattern[this.#position]!]!;
+        this.#applyInputs(stimulus, cycle * stimulusStride, start);
+        for (const step of steps) {
+          if (step.kind === 'levels') this.#moveClocks(step.active);
+          else if (response) this.#sample(response, cycle * responseStride);
+        }
+        this.#position = (this.#position + 1) % this.#schedule.pattern.length;
       }
     } catch (error) {
       if (!(error instanceof UnsettledLoop)) throw error;
@@ -106,7 +116,7 @@ export class ReferenceEngine implements Engine {
     return this.#settler.value[net]!;
   }
 
-  #applyInputs(rows: Uint32Array, at: number): void {
+  #applyInputs(rows: Uint32Array, at: number, clocks: readonly boolean[]): void {
     const settler = this.#settler;
     const { words } = this.layout.inputs;
     settler.startPeriod();
@@ -121,19 +131,23 @@ export class ReferenceEngine implements Engine {
       this.#settleAndCapture();
       return;
     }
-    for (const { net, inactive } of this.#clocks) settler.set(net, inactive);
+    this.#setClocks(clocks);
     settler.settle();
     settler.takeMovedClocks();
     for (const net of this.#circuit.registers.clock) this.#seen[net] = settler.value[net]!;
     this.#started = true;
   }
 
-  #moveClocks(active: boolean): void {
+  #moveClocks(active: readonly boolean[]): void {
     this.#settler.startPeriod();
-    for (const { net, inactive } of this.#clocks) {
-      this.#settler.set(net, active ? 1 - inactive : inactive);
-    }
+    this.#setClocks(active);
     this.#settleAndCapture();
+  }
+
+  #setClocks(active: readonly boolean[]): void {
+    for (const [clock, { net, inactive }] of this.#clocks.entries()) {
+      this.#settler.set(net, active[clock] ? 1 - inactive : inactive);
+    }
   }
 
   #settleAndCapture(): void {

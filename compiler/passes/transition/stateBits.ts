@@ -2,10 +2,9 @@ import { type Literal, type LogicState, TRUE } from '../../logic/logic.js';
 import type { LogicBuilder } from '../../logic/logicBuilder.js';
 import { mayBeOne, mayBeZero, type NetValue, pair } from './algebra.js';
 
-/** The state bits of a transition: made on demand, given their next value at the end. */
+/** The state bits of a transition: made on demand, the same for all cycles. */
 export class StateBits {
   readonly list: LogicState[] = [];
-  readonly next: Literal[] = [];
   readonly #logic: LogicBuilder;
   readonly #threeValued: boolean;
   readonly #inputs = new Map<number, NetValue>();
@@ -38,15 +37,14 @@ export class StateBits {
     return this.#threeValued ? pair(this.#started, this.#started ^ 1) : this.#started;
   }
 
-  /** Sets the next value of every bit. */
-  commit(elements: ArrayLike<NetValue>, input: (index: number) => NetValue): void {
+  /** The next value of every bit, for a cycle that ends with these values of the elements. */
+  nextOf(elements: ArrayLike<NetValue>, input: (index: number) => NetValue): Literal[] {
     const one = (value: NetValue): Literal => (this.#threeValued ? mayBeOne(value) : value);
-    this.list.forEach(({ role, index }, bit) => {
-      if (role === 'value') this.next[bit] = one(elements[index]!);
-      else if (role === 'zero') this.next[bit] = mayBeZero(elements[index]!);
-      else if (role === 'input') this.next[bit] = one(input(index));
-      else if (role === 'inputZero') this.next[bit] = mayBeZero(input(index));
-      else this.next[bit] = TRUE;
+    return this.list.map(({ role, index }) => {
+      if (role === 'value') return one(elements[index]!);
+      if (role === 'zero') return mayBeZero(elements[index]!);
+      if (role === 'input') return one(input(index));
+      return role === 'inputZero' ? mayBeZero(input(index)) : TRUE;
     });
   }
 

@@ -1,5 +1,10 @@
 import type { Circuit } from '../../circuit/circuit.js';
 import type { ClockPorts } from '../../circuit/clockPorts.js';
+import {
+  type ClockSchedule,
+  type CycleShape,
+  togetherSchedule,
+} from '../../circuit/clockSchedule.js';
 import { loopsOf } from '../../circuit/loops.js';
 import { describeNets } from '../../circuit/netPlaces.js';
 import { waveLimit } from '../../circuit/waveLimit.js';
@@ -26,93 +31,133 @@ export interface TransitionOptions extends LogicOptions {
 }
 
 /**
- * Turns one clock cycle of a circuit into logic: registers and latches are cut, and the phases of
- * the cycle (inputs, sampling, active edge, return) are followed symbolically.
+ * Turns the clock cycles of a circuit into logic, one graph for each shape of cycle: registers and
+ * latches are cut, and the steps of the cycle (inputs, sampling, clock edges) are followed
+ * symbolically.
  *
- * With the clock at a known level in each phase, gating cells, latch pairs and dividers dissolve
+ * With the clocks at known levels in each step, gating cells, latch pairs and dividers dissolve
  * into plain logic; where all registers sit on one edge of one clock, what is left is one settling
- * and one commit.
+ * and one commit. The graphs share their nodes and state bits.
  */
-export function transition(
+export function transitions(
   circuit: Circuit,
   clocks: ClockPorts,
+  schedule: ClockSchedule,
   options: TransitionOptions = {},
-): Logic {
+): Logic[] {
   const isThreeValued = options.threeValued ?? false;
   const logic = new LogicBuilder(options);
   const algebra = isThreeValued ? threeValued(logic) : twoValued(logic);
   const row = new RowBits(circuit, clocks, logic, isThreeValued);
   const states = new StateBits(logic, isThreeValued);
-  const inactive = new Map<number, 0 | 1>(clocks.ports.map((port) => [port.net, port.inactive]));
-  const inputs = (active: boolean) => (net: number) =>
-    clockLevel(algebra, inactive.get(net), active) ?? row.value(row.bitOf(net));
+  const scene = { circuit, clocks, algebra, row, states, held: heldAtStart(circuit, states) };
+  const cycles = schedule.shapes.map((shape) => followCycle(scene, shape));
+  const graphs = cycles.map(({ sampled, end, faults }) => ({
+    outputs: isThreeValued ? splitUnknown(logic, sampled) : sampled,
+    // Only now are all state bits known that any of the cycles needs.
+    next: states.nextOf(heldElements(end), (bit) => row.value(bit)),
+    faults,
+  }));
+  const columns = logic.take();
+  return graphs.map((graph) => ({
+    ...graph,
+    nodeCount: columns.op.length,
+    ...columns,
+    inputCount: row.count,
+    states: states.list,
+    updates: [],
+  }));
+}
 
+/** The cycle of a circuit whose clocks all tick together, see `transitions`. */
+export const transition = (
+  circuit: Circuit,
+  clocks: ClockPorts,
+  options: TransitionOptions = {},
+): Logic => transitions(circuit, clocks, togetherSchedule(clocks), options)[0]!;
+
+interface Scene {
+  readonly circuit: Circuit;
+  readonly clocks: ClockPorts;
+  readonly algebra: Algebra;
+  readonly row: RowBits;
+  readonly states: StateBits;
+  /** What state elements hold when a cycle starts, in their order. */
+  readonly held: readonly NetValue[];
+}
+
+interface CourseOfCycle {
+  readonly sampled: readonly NetValue[];
+  readonly end: Settled;
+  readonly faults: readonly { readonly when: Literal; readonly message: string }[];
+}
+
+function followCycle(scene: Scene, shape: CycleShape): CourseOfCycle {
+  const { circuit, algebra, row, states } = scene;
   const faults: { when: Literal; message: string }[] = [];
-  const before = (net: number): NetValue =>
-    clockLevel(algebra, inactive.get(net), false) ?? states.previousInput(row.bitOf(net));
-  const start = atStart(circuit, algebra, states, before, (when, nets) => {
-    faults.push({ when, message: `a loop does not settle: ${describeNets(circuit, nets)}` });
-  });
   const rules: WaveRules = {
     enabled: algebra.one,
     limit: waveLimit(circuit),
     endless: (when) => faults.push({ when, message: 'clock pins move one another without end' }),
   };
-  const applied = withInputs(start, inputs(false));
-  const settled = capture(start, applied, { ...rules, enabled: states.started() });
-  const sampled = circuit.outputs.flatMap(({ nets }) =>
-    Array.from(nets, (net) => settled.value(net)),
-  );
-  const active = capture(settled, withInputs(settled, inputs(true)), rules);
-  const end = capture(active, withInputs(active, inputs(false)), rules);
-  states.commit(heldElements(end), (bit) => row.value(bit));
-
-  const outputs = isThreeValued ? splitUnknown(logic, sampled) : sampled;
-  const columns = logic.take();
-  return {
-    nodeCount: columns.op.length,
-    ...columns,
-    inputCount: row.count,
-    outputs,
-    next: states.next,
-    states: states.list,
-    updates: [],
-    faults,
-  };
+  const inputs = (active: readonly boolean[]): Moment['inputs'] =>
+    inputValues(scene, active, (net) => row.value(row.bitOf(net)));
+  const before = inputValues(scene, shape.start, (net) => states.previousInput(row.bitOf(net)));
+  const start = atStart(scene, before, (when, nets) => {
+    faults.push({ when, message: `a loop does not settle: ${describeNets(circuit, nets)}` });
+  });
+  const applied = withInputs(start, inputs(shape.start));
+  let settled = capture(start, applied, { ...rules, enabled: states.started() });
+  let sampled: NetValue[] = [];
+  for (const step of shape.steps) {
+    if (step.kind === 'sample') {
+      const nets = circuit.outputs.flatMap((port) => Array.from(port.nets));
+      sampled = nets.map((net) => settled.value(net));
+    } else {
+      settled = capture(settled, withInputs(settled, inputs(step.active)), rules);
+    }
+  }
+  return { sampled, end: settled, faults };
 }
 
-function clockLevel(
-  algebra: Algebra,
-  inactive: 0 | 1 | undefined,
-  active: boolean,
-): NetValue | undefined {
-  if (inactive === undefined) return undefined;
-  return (inactive === 1) !== active ? algebra.one : algebra.zero;
+// Clocks are constants at their levels; other inputs are what the row says.
+function inputValues(
+  { clocks, algebra }: Scene,
+  active: readonly boolean[],
+  data: Moment['inputs'],
+): Moment['inputs'] {
+  const levels = new Map<number, NetValue>();
+  for (const [clock, { net, inactive }] of clocks.ports.entries()) {
+    levels.set(net, (inactive === 1) !== active[clock] ? algebra.one : algebra.zero);
+  }
+  return (net) => levels.get(net) ?? data(net);
+}
+
+function heldAtStart(circuit: Circuit, states: StateBits): NetValue[] {
+  const { registers, latches } = circuit;
+  const count = registers.count + latches.count + loopsOf(circuit).keptNets.length;
+  return Array.from({ length: count }, (_, element) => states.element(element));
 }
 
 // Where the cycle before ended: everything has settled, with the inputs it had.
 function atStart(
-  circuit: Circuit,
-  algebra: Algebra,
-  states: StateBits,
-  inputs: (net: number) => NetValue,
+  { circuit, algebra, held }: Scene,
+  inputs: Moment['inputs'],
   unsettled: Moment['unsettled'],
 ): Settled {
   const { registers, latches } = circuit;
   const elementCount = registers.count + latches.count;
-  const held = new Float64Array(elementCount);
-  for (let e = 0; e < elementCount; e++) held[e] = states.element(e);
   const kept = new Map<number, NetValue>();
-  for (const net of loopsOf(circuit).keptNets)
-    kept.set(net, states.element(elementCount + kept.size));
+  for (const [i, net] of loopsOf(circuit).keptNets.entries())
+    kept.set(net, held[elementCount + i]!);
   return new Settled({
     circuit,
     algebra,
     elementOf: elementsByNet(circuit),
     loops: new LoopSet(circuit),
     inputs,
-    registers: held.subarray(0, registers.count),
-    latches: held.subarray(registers.count),
+    registers: Float64Array.from(held.slice(0, registers.count)),
+    latches: Float64Array.from(held.slice(registers.count, elementCount)),
     kept: (net) => kept.get(net)!,
     unsettled,
   });

@@ -26,8 +26,13 @@ export function declareState(build: CellBuild, state: LibertyState): StateNets {
   const netAt = (place: number): NetId => netId(first + count - 1 - place);
   const inverses: (NetId | undefined)[] = [];
   const inverseAt = (place: number): NetId => {
-    inverses[place] ??= buildInverse(build, state, netAt(place), contextAt(width, place));
-    return inverses[place];
+    const known = inverses[place];
+    if (known !== undefined) return known;
+    // Made before it is driven: its own functions may name it.
+    const net = recording.net();
+    inverses[place] = net;
+    driveInverse(build, state, { state: netAt(place), inverse: net }, contextAt(width, place));
+    return net;
   };
   for (const [own, net] of [
     [name, netAt],
@@ -78,16 +83,12 @@ function buildRegister(build: CellBuild, element: Element): void {
   if (clock === undefined || next === undefined) return;
   const { set, reset, priority, hold } = controls;
   const edge = clock.isInverted ? Edge.Falling : Edge.Rising;
-  const data = hold === undefined ? next : build.gate(GateKind.Mux, hold, next, output);
-  if (slaveText === undefined) {
-    recording.register({ output, clock: clock.net, edge, data, set, reset, priority });
-    return;
-  }
+  const master = slaveText === undefined ? output : recording.net();
+  const data = hold === undefined ? next : build.gate(GateKind.Mux, hold, next, master);
+  recording.register({ output: master, clock: clock.net, edge, data, set, reset, priority });
   if (slave === undefined) return;
   // The master's value passes while the slave's clock is active: at once where the two edges
   // come together, else at the slave's own.
-  const master = recording.net();
-  recording.register({ output: master, clock: clock.net, edge, data, set, reset, priority });
   const enable = enabledBy(build, slave, hold);
   recording.latch({ output, enable, data: master, set, reset, priority });
 }
@@ -122,9 +123,7 @@ export const MODEL_CURE =
   'give the cell a Verilog model in a file that is named before the library';
 
 const enabledBy = (build: CellBuild, enable: NetId, hold: NetId | undefined): NetId =>
-  hold === undefined
-    ? enable
-    : build.gate(GateKind.And, enable, build.gate(GateKind.Not, hold));
+  hold === undefined ? enable : build.gate(GateKind.And, enable, build.gate(GateKind.Not, hold));
 
 function required(build: CellBuild, state: LibertyState, name: string) {
   const text = state.functions.get(name);
@@ -181,30 +180,45 @@ const priorities: Readonly<Record<BothActive, number>> = {
   X: Priority.Unknown,
 };
 
-const opposites: Readonly<Record<BothActive, BothActive>> = { L: 'H', H: 'L', N: 'N', T: 'X', X: 'X' };
+const opposites: Readonly<Record<BothActive, BothActive>> = {
+  L: 'H',
+  H: 'L',
+  N: 'N',
+  T: 'X',
+  X: 'X',
+};
 
 /**
  * The inverse of a state, which `clear_preset_var2` sets apart from it only while clear and preset
  * are both active: L and H give that value, all else x where it is not what the inverse has then.
  */
-function buildInverse(
+function driveInverse(
   build: CellBuild,
   { functions, bothState, bothInverse }: LibertyState,
-  state: NetId,
+  nets: { readonly state: NetId; readonly inverse: NetId },
   context: Context,
-): NetId {
-  const inverse = build.gate(GateKind.Not, state);
+): void {
+  const { recording } = build;
   const clearText = functions.get('clear');
   const presetText = functions.get('preset');
   const natural = opposites[bothState ?? 'X'];
   const both = bothInverse === 'T' ? 'X' : (bothInverse ?? natural);
-  if (clearText === undefined || presetText === undefined || both === natural) return inverse;
-  const clear = build.function(clearText, context);
-  const preset = build.function(presetText, context);
-  if (clear === undefined || preset === undefined) return inverse;
+  const isPlain = clearText === undefined || presetText === undefined || both === natural;
+  const clear = isPlain ? undefined : build.function(clearText, context);
+  const preset = isPlain ? undefined : build.function(presetText, context);
+  if (clear === undefined || preset === undefined) {
+    recording.drive(nets.inverse, GateKind.Not, [nets.state]);
+    return;
+  }
   const active = build.gate(GateKind.And, clear, preset);
-  if (both === 'H') return build.gate(GateKind.Or, inverse, active);
-  if (both === 'L') return build.gate(GateKind.And, inverse, build.gate(GateKind.Not, active));
-  const unknown = build.recording.constant(GateKind.Unknown);
-  return build.gate(GateKind.Mux, active, inverse, unknown);
+  if (both === 'L') {
+    recording.drive(nets.inverse, GateKind.Nor, [nets.state, active]);
+    return;
+  }
+  const usual = build.gate(GateKind.Not, nets.state);
+  if (both === 'H') recording.drive(nets.inverse, GateKind.Or, [usual, active]);
+  else {
+    const unknown = recording.constant(GateKind.Unknown);
+    recording.drive(nets.inverse, GateKind.Mux, [active, usual, unknown]);
+  }
 }

@@ -4,7 +4,7 @@ import type { DiagnosticCode } from '../../diagnostics/codes.js';
 import type { Position } from '../../diagnostics/sourceMap.js';
 import type { Recording } from '../verilog/elaborate/recording.js';
 import type { LibertyCell } from './cell.js';
-import { CellNets, type Context } from './cellNets.js';
+import { CellNets, type Context, scalarContext } from './cellNets.js';
 import { type Expression, type Operation, parseExpression } from './expression.js';
 import type { LibertyText } from './syntax.js';
 
@@ -27,6 +27,8 @@ export class CellBuild {
   readonly recording: Recording;
   readonly nets: CellNets;
   readonly report: CellReport;
+  // What clear and preset give is wanted for the state and for its inverse.
+  readonly #built = new Map<LibertyText, NetId>();
 
   constructor(cell: LibertyCell, recording: Recording, report: CellReport) {
     this.cell = cell;
@@ -37,8 +39,12 @@ export class CellBuild {
 
   /** The net of a function's value; undefined after a report. */
   function(text: LibertyText, context: Context): NetId | undefined {
+    const known = context === scalarContext ? this.#built.get(text) : undefined;
+    if (known !== undefined) return known;
     const expression = this.#parse(text);
-    return expression && this.#build(expression, text, context);
+    const net = expression && this.#build(expression, text, context);
+    if (net !== undefined && context === scalarContext) this.#built.set(text, net);
+    return net;
   }
 
   /** The net of a function without a final inversion, and whether it has one. */

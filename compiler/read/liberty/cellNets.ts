@@ -1,7 +1,7 @@
 import { type NetId, netId } from '../../circuit/ids.js';
 import type { Recording } from '../verilog/elaborate/recording.js';
-import { type BitRange, indexAt, placeOf } from './bitRange.js';
-import type { LibertyCell, LibertyPin } from './cell.js';
+import { indexAt, placeOf } from './bitRange.js';
+import type { BitRange, LibertyCell, LibertyPin } from './cell.js';
 
 /** Where a function stands: it may mean one bit of each bus, bundle and bank that it names. */
 export interface Context {
@@ -50,7 +50,10 @@ export class CellNets {
     this.pins = pins;
     this.boundary = Array.from({ length: isPort.size }, (_, place) => netId(first + place));
     for (const [index, { name }] of cell.pins.entries()) {
-      this.#pinNames.set(name, single(() => pins[index]!));
+      this.#pinNames.set(
+        name,
+        single(() => pins[index]!),
+      );
     }
     for (const { name, pins: bits, range } of cell.vectors) {
       const net = (place: number): NetId => pins[bits[place]!]!;

@@ -117,7 +117,8 @@ class ExpressionParser {
     const isPlain = name.length === end - start;
     if (this.#isName) {
       this.#next();
-      if (isPlain && (name === '0' || name === '1')) return { kind: 'constant', value: name === '1' ? 1 : 0 };
+      if (isPlain && (name === '0' || name === '1'))
+        return { kind: 'constant', value: name === '1' ? 1 : 0 };
       return { kind: 'name', name, start, end };
     }
     if (name !== '(') this.#fail('expected a pin name, 0, 1 or (');

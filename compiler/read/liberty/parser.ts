@@ -221,7 +221,7 @@ export class LibertyParser {
     if (rule === libraryRule && cellRule.groups.has(kind)) {
       this.#recovery.outside(kind, 'cell', start);
     }
-    if (!scanner.skipArguments()) this.#resume(kind, start);
+    if (!scanner.skipArguments()) this.#resume(kind, start, ')');
     else {
       scanner.next();
       if (scanner.token === Token.OpenGroup) this.#skipGroup(kind, start);
@@ -231,13 +231,14 @@ export class LibertyParser {
 
   #skipGroup(kind: string, start: Position): void {
     if (this.#scanner.skipGroup()) this.#scanner.next();
-    else this.#resume(kind, start);
+    else this.#resume(kind, start, '}');
   }
 
   /** Goes on with the next cell after something of which the end is missing. */
-  #resume(kind: string, start: Position): void {
+  #resume(kind: string, start: Position, closing: string): void {
     const library = this.#stack.findLastIndex(({ rule }) => rule.groups.has('cell'));
-    if (this.#recovery.resume(kind, start)) this.#returnTo = Math.max(library, this.#floor);
+    if (this.#recovery.resume(kind, start, closing))
+      this.#returnTo = Math.max(library, this.#floor);
   }
 
   /** Takes what stands outside of all libraries, from a position on, as part of the last. */

@@ -24,11 +24,15 @@ export function readLiberty(
   const problems = new Problems(sourceMap, diagnostics);
   const includes = new Includes(options, sourceMap, problems);
   const cells: LibertyCell[] = [];
+  const found = diagnostics.list.length;
   const parser = new LibertyParser(new NameTable(), problems, includes, (group, library) => {
     const cell = readCell(group, library);
     if (cell.name !== '') cells.push(cell);
     else problems.add('syntax-error', 'the cell has no name', group.start, group.end);
   });
   const libraries = parser.parseFile(source);
+  if (libraries.length === 0 && diagnostics.list.length === found) {
+    diagnostics.add('syntax-error', 'the file has no library group', { source, start: 0, end: 0 });
+  }
   return { name: libraries[0]?.names[0]?.text ?? '', cells };
 }

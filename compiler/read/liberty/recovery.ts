@@ -52,17 +52,22 @@ export class Recovery {
     this.fault(message, start, start + what.length);
   }
 
-  /** Reports a group whose `}` is missing at the end of the text; only the innermost. */
-  unclosed(what: string, start: Position, end: Position): void {
+  /** Reports something whose closing character is missing at the end of the text; only the innermost. */
+  unclosed(what: string, start: Position, end: Position, closing = '}'): void {
     if (this.#scanner.openEnd >= 0 || this.#reported.has('')) return;
     this.#reported.add('');
-    this.fault(`${what} is not closed; a '}' is missing before the end of the text`, start, end);
+    this.fault(
+      `${what} is not closed; a '${closing}' is missing before the end of the text`,
+      start,
+      end,
+    );
   }
 
   /** Reports a string or comment that has no end. */
   reportOpenEnd(): void {
     const { bytes, base, openEnd } = this.#scanner;
     if (openEnd < 0) return;
+    this.#reported.add('');
     const isString = bytes[openEnd] === Char.Quote;
     const bare = isString ? firstBareString(bytes) : -1;
     const start = base + (bare < 0 ? openEnd : bare);
@@ -76,13 +81,13 @@ export class Recovery {
    * Goes on at the next line that begins with a cell, after a group or arguments of which the end
    * is missing. Whether there is such a line; otherwise the text ends here.
    */
-  resume(kind: string, start: Position): boolean {
+  resume(kind: string, start: Position, closing: string): boolean {
     const scanner = this.#scanner;
     const from = start - scanner.base;
     scanner.goTo(from);
     do scanner.next();
     while (scanner.token !== Token.End);
-    this.unclosed(kind, start, start + kind.length);
+    this.unclosed(kind, start, start + kind.length, closing);
     this.reportOpenEnd();
     const cell = ++this.#resumes > MAX_RESUMES ? -1 : cellLine(scanner.bytes, from);
     scanner.goTo(cell < 0 ? scanner.bytes.length : cell);

@@ -120,6 +120,7 @@ export class Scanner {
     if (end < 0) return false;
     this.end = end;
     this.#isCut = true;
+    this.openEnd = -1;
     return true;
   }
 

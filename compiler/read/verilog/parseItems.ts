@@ -20,6 +20,7 @@ import { parseGateInstances, parseModuleInstances } from './parseInstances.js';
 import { parseFunction, parseTask } from './parseRoutine.js';
 import type { Parser } from './parser.js';
 import { parseTarget } from './parseSimpleStatement.js';
+import { moduleEnds, parseSpecify } from './parseSpecify.js';
 import { parseStatement } from './parseStatement.js';
 import type { GenerateBlock, Item } from './syntax.js';
 import { Token } from './tokens.js';
@@ -31,12 +32,6 @@ const itemStops: ReadonlySet<number> = new Set([
   ...[Keyword.endmodule, Keyword.module, Keyword.macromodule, Keyword.primitive, Keyword.end],
   ...[Keyword.endgenerate, Keyword.always, Keyword.initial, Keyword.function, Keyword.task],
   ...[Keyword.generate, Keyword.specify],
-]);
-
-/** Kinds that end a module, also where its `endmodule` is missing. */
-const moduleEnds: ReadonlySet<number> = new Set([
-  ...[Keyword.endmodule, Keyword.module, Keyword.macromodule, Keyword.primitive],
-  Token.EndOfInput,
 ]);
 
 const itemParsers: (ItemParser | undefined)[] = tableOfItems();
@@ -89,7 +84,7 @@ function tableOfItems(): (ItemParser | undefined)[] {
   table[Keyword.function] = parseFunction;
   table[Keyword.task] = parseTask;
   table[Keyword.defparam] = parseDefparams;
-  table[Keyword.specify] = skipSpecify;
+  table[Keyword.specify] = parseSpecify;
   table[Keyword.generate] = (p, items) => parseGenerateRegion(p, items, parseItems);
   table[Keyword.for] = (p, items) => parseGenerateFor(p, items, parseBlock);
   table[Keyword.if] = (p, items) => parseGenerateIf(p, items, parseBlock);
@@ -136,12 +131,4 @@ function parseDefparams(p: Parser, items: Item[]): void {
     items.push({ kind: 'defparam', path, ...(indices && { indices }), value, ...place });
   } while (p.accept(Token.Comma));
   p.expect(Token.Semicolon);
-}
-
-/** `specify` … `endspecify`: timing only, set aside. */
-function skipSpecify(p: Parser): void {
-  const { start, end } = p.tokens;
-  do p.tokens.next();
-  while (!p.is(Keyword.endspecify) && !moduleEnds.has(p.tokens.kind));
-  if (!p.accept(Keyword.endspecify)) p.failAt("the specify block has no 'endspecify'", start, end);
 }

@@ -30,6 +30,7 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
     unused: pruneUnused(builder, children, nets, canonical),
     ports: boundary.ports,
     portOfName: boundary.portOfName,
+    hasPortOrder: true,
     boundary: nets,
     drives: Uint8Array.from(nets, (net) => (usage.drivers[net]! > 0 ? 1 : 0)),
     reads: Uint8Array.from(nets, (net) => usage.isRead[net]!),

@@ -1,5 +1,6 @@
 import { GateKind } from '../../../circuit/gates.js';
 import { type NetId, NO_NET } from '../../../circuit/ids.js';
+import type { Position } from '../../../diagnostics/sourceMap.js';
 import { ConnectionKind, POSITIONAL } from '../instances.js';
 import type { BlockScope } from './blockScope.js';
 import { type ModuleBody, NOT_PLACED } from './body.js';
@@ -74,6 +75,10 @@ function portPlace(
   const table = body.module.instances;
   const name = table.connectionPort(connection);
   const { ports, portOfName } = template;
+  if (name === POSITIONAL && !template.hasPortOrder) {
+    if (position === 0) reportUnordered(body, template, table.connectionPosition(connection));
+    return -1;
+  }
   if (name === POSITIONAL) {
     if (position < ports.length) return position;
     if (position === ports.length) {
@@ -92,6 +97,14 @@ function portPlace(
   const message = `${template.name} has no port ${body.text(name)}; ${list}`;
   body.report('port-unknown', message, start, end);
   return -1;
+}
+
+function reportUnordered(body: ModuleBody, { name, ports }: Template, place: Position): void {
+  const { start, end } = body.wordAt(place);
+  const [first] = ports;
+  const example = first === undefined ? '' : `, as .${body.text(first.name)}(…)`;
+  const message = `the library of ${name} gives its pins no order; connect them by name${example}`;
+  body.report('not-supported', message, start, end);
 }
 
 function reportTwice(

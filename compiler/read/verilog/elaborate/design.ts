@@ -3,11 +3,16 @@ import type { Span } from '../../../diagnostics/source.js';
 import type { Position, SourceMap } from '../../../diagnostics/sourceMap.js';
 import type { NameId, NameTable } from '../../names.js';
 import type { ModuleSyntax, PrimitiveSyntax, VerilogSyntax } from '../syntax.js';
+import type { LibraryCell } from './libraryCell.js';
 import { LimitedReport, wordSpan } from './messages.js';
 import { NameIndex } from './nameIndex.js';
 import { noOverrides, type Overrides, overridesKey } from './overrides.js';
+import { type Shadowed, ShadowedModels } from './shadowedModels.js';
 import type { Template } from './template.js';
 import { UnknownModules } from './unknownModules.js';
+
+/** What an instance can name. */
+export type Definition = ModuleSyntax | PrimitiveSyntax | LibraryCell;
 
 /** How the templates of a design are made. */
 export interface TemplateMakers {
@@ -22,21 +27,25 @@ export const NO_TEMPLATE = -1;
 const MAX_DEPTH = 300;
 const MAX_UNDRIVEN = 50;
 
-/** All modules and primitives by name, and the templates made of them so far. */
+/** All modules, primitives and library cells by name, and the templates made of them so far. */
 export class Design {
   readonly names: NameTable;
   readonly sources: SourceMap;
   readonly diagnostics: Diagnostics;
   readonly modules: readonly ModuleSyntax[];
   readonly primitives: readonly PrimitiveSyntax[];
+  readonly cells: readonly LibraryCell[];
   readonly templates: Template[] = [];
   readonly unknown: UnknownModules;
   readonly undriven: LimitedReport;
+  readonly shadowed: ShadowedModels;
   readonly #makers: TemplateMakers;
-  /** Index into `modules` by name, or into `primitives` beyond them. */
+  /** Index into `modules` by name, or into `primitives` and then `cells` beyond them. */
   readonly #definition = new NameIndex(64);
   /** Template of each definition without overrides, + 1; 0 for none yet. */
   readonly #plain: Int32Array;
+  /** Per definition: another one of the same name that does not count. */
+  readonly #twins = new Map<number, Shadowed>();
   readonly #specialised = new Map<string, number>();
   readonly #parameters = new Map<NameId, readonly NameId[]>();
   readonly #open: { readonly key: string; readonly module: ModuleSyntax }[] = [];
@@ -46,29 +55,33 @@ export class Design {
     sources: SourceMap,
     diagnostics: Diagnostics,
     makers: TemplateMakers,
+    cells: readonly LibraryCell[] = [],
   ) {
     this.names = syntax.names;
     this.sources = sources;
     this.diagnostics = diagnostics;
     this.modules = syntax.modules;
     this.primitives = syntax.primitives;
+    this.cells = cells;
     this.#makers = makers;
     this.unknown = new UnknownModules(this);
     this.undriven = new LimitedReport('net-undriven', MAX_UNDRIVEN);
-    this.#plain = new Int32Array(this.modules.length + this.primitives.length);
-    for (const [index, definition] of [...this.modules, ...this.primitives].entries()) {
-      this.#define(definition, index);
-    }
+    this.shadowed = new ShadowedModels(this);
+    const definitions: Definition[] = [...this.modules, ...this.primitives, ...cells];
+    this.#plain = new Int32Array(definitions.length);
+    for (const [index, definition] of definitions.entries()) this.#define(definition, index);
   }
 
-  /** The module or primitive with a name. */
-  definition(name: NameId): ModuleSyntax | PrimitiveSyntax | undefined {
+  /** The module, primitive or library cell with a name. */
+  definition(name: NameId): Definition | undefined {
     const index = this.#definition.get(name);
     return index < 0 ? undefined : this.#at(index);
   }
 
   isPrimitive(name: NameId): boolean {
-    return this.#definition.get(name) >= this.modules.length;
+    const { modules, primitives } = this;
+    const place = this.#definition.get(name) - modules.length;
+    return place >= 0 && place < primitives.length;
   }
 
   /**
@@ -116,6 +129,11 @@ export class Design {
 
   #make(index: number, key: string, overrides: Overrides, place: Position): number {
     const definition = this.#at(index);
+    const twin = this.#twins.get(index);
+    if (twin !== undefined) this.shadowed.add(twin);
+    if ('template' in definition) {
+      return this.templates.push(definition.template(this, place)) - 1;
+    }
     if (!('items' in definition)) {
       return this.templates.push(this.#makers.primitive(this, definition)) - 1;
     }
@@ -136,10 +154,14 @@ export class Design {
     return true;
   }
 
-  #define(definition: ModuleSyntax | PrimitiveSyntax, index: number): void {
+  #define(definition: Definition, index: number): void {
     const first = this.#definition.get(definition.name);
     if (first < 0) {
       this.#definition.set(definition.name, index);
+      return;
+    }
+    if ('template' in definition) {
+      this.#choose(definition, index, first);
       return;
     }
     const name = this.text(definition.name);
@@ -152,8 +174,22 @@ export class Design {
     ]);
   }
 
-  #at(index: number): ModuleSyntax | PrimitiveSyntax {
-    const { modules, primitives } = this;
-    return index < modules.length ? modules[index]! : primitives[index - modules.length]!;
+  /** Which of two models of a cell decides: that of the file named first. */
+  #choose(cell: LibraryCell, index: number, other: number): void {
+    const { name, nameStart } = cell;
+    const otherStart = this.#at(other).nameStart;
+    if (!cell.precedes(otherStart)) {
+      this.#twins.set(other, { name, chosen: otherStart, other: nameStart });
+      return;
+    }
+    this.#definition.set(name, index);
+    this.#twins.set(index, { name, chosen: nameStart, other: otherStart });
+  }
+
+  #at(index: number): Definition {
+    const { modules, primitives, cells } = this;
+    if (index < modules.length) return modules[index]!;
+    const place = index - modules.length;
+    return place < primitives.length ? primitives[place]! : cells[place - primitives.length]!;
   }
 }

@@ -5,6 +5,7 @@ import type { SourceMap } from '../../../diagnostics/sourceMap.js';
 import type { VerilogSyntax } from '../syntax.js';
 import { compileModule } from './compileModule.js';
 import { Design, NO_TEMPLATE } from './design.js';
+import type { LibraryCell } from './libraryCell.js';
 import { DistinctDiagnostics, wordSpan } from './messages.js';
 import { noOverrides } from './overrides.js';
 import { compilePrimitive } from './primitives.js';
@@ -16,6 +17,8 @@ import { addTopPorts, checkTopPorts } from './topPorts.js';
 export interface ElaborateOptions {
   /** Name of the top module; chosen by itself where only one can be meant. */
   readonly top?: string;
+  /** Cells of libraries in other forms, in the order of their files. */
+  readonly cells?: readonly LibraryCell[];
 }
 
 /**
@@ -34,7 +37,7 @@ export function elaborate(
 ): Circuit | undefined {
   const found = new DistinctDiagnostics();
   const makers = { module: compileModule, primitive: compilePrimitive };
-  const design = new Design(syntax, sources, found, makers);
+  const design = new Design(syntax, sources, found, makers, options.cells);
   const circuit = build(design, options.top);
   for (const { code, message, span, related } of found.list) {
     diagnostics.add(code, message, span, related);
@@ -47,6 +50,7 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
   if (module === undefined) return undefined;
   const index = design.template(module.name, noOverrides, module.nameStart);
   design.unknown.report();
+  design.shadowed.report();
   if (index === NO_TEMPLATE) return undefined;
   const top = design.templates[index]!;
   checkTopPorts(design, module, top);

@@ -18,8 +18,17 @@ const levelMasks: Readonly<Record<string, number>> = { '0': 1, '1': 2, x: 0, '?'
 /** The two-valued edges of each symbol: 1 for one that falls, 2 for one that rises. */
 const edgeMasks: Readonly<Record<string, number>> = { r: 2, p: 2, f: 1, n: 1, '*': 3 };
 
+/** What a table with a state says, for inputs and states of 0 and 1; bit i of `levels` is input i. */
+export interface SequentialTable {
+  readonly inputs: number;
+  /** The outcome that the levels give whichever input has changed, if they do. */
+  level(levels: number, state: number): Outcome | undefined;
+  /** The outcome of a change of one input, with the levels after it. */
+  event(input: number, levels: number, state: number): Outcome;
+}
+
 /** The table of a primitive for inputs and states of 0 and 1 (IEEE 1364-2005, clause 8.1.4). */
-export class PrimitiveTable {
+export class PrimitiveTable implements SequentialTable {
   readonly inputs: number;
   readonly #levelRows: Row[] = [];
   readonly #edgeRows: Row[] = [];

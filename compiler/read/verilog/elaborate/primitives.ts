@@ -40,6 +40,7 @@ export function compilePrimitive(design: Design, primitive: PrimitiveSyntax): Te
     ports,
     // The terminals of a primitive have no names for its instances (clause 8.6).
     portOfName: new Map(),
+    hasPortOrder: true,
     boundary,
     drives: usage.drivers.slice(first, first + ports.length),
     reads: usage.isRead.slice(first, first + ports.length),

@@ -1,7 +1,7 @@
 import type { NetId } from '../../../circuit/ids.js';
 import { buildFlipFlop } from './flipFlopPrimitive.js';
 import { buildLatch } from './latchPrimitive.js';
-import type { PrimitiveTable } from './primitiveTable.js';
+import type { SequentialTable } from './primitiveTable.js';
 import type { Recording } from './recording.js';
 import { TableBehaviour } from './tableBehaviour.js';
 
@@ -22,7 +22,7 @@ export interface StatePins {
  * never to change. Returns the reason where the table is neither.
  */
 export function lowerSequential(
-  table: PrimitiveTable,
+  table: SequentialTable,
   pins: StatePins,
   recording: Recording,
 ): string | undefined {

@@ -1,4 +1,4 @@
-import type { Outcome, PrimitiveTable } from './primitiveTable.js';
+import type { Outcome, SequentialTable } from './primitiveTable.js';
 
 /** An edge of an input: `value` is its level afterwards. */
 export interface InputEdge {
@@ -11,10 +11,10 @@ export class TableBehaviour {
   readonly inputs: number;
   /** Inputs that do something: all but the notifiers. */
   readonly live: readonly number[];
-  readonly #table: PrimitiveTable;
+  readonly #table: SequentialTable;
   #notifiers = 0;
 
-  constructor(table: PrimitiveTable) {
+  constructor(table: SequentialTable) {
     this.inputs = table.inputs;
     this.#table = table;
     const all = Array.from({ length: table.inputs }, (_, input) => input);

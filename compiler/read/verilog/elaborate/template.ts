@@ -55,6 +55,8 @@ export interface Template {
   readonly ports: readonly TemplatePort[];
   /** Index into `ports` by name. */
   readonly portOfName: ReadonlyMap<NameId, number>;
+  /** Whether connections may be given by place in `ports`. */
+  readonly hasPortOrder: boolean;
   /** The nets of all ports, each least significant bit first. */
   readonly boundary: Uint32Array;
   /** Per place of the boundary: whether the module drives that net. */

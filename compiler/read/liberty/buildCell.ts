@@ -1,0 +1,99 @@
+import { GateKind } from '../../circuit/gates.js';
+import type { NetId } from '../../circuit/ids.js';
+import { Children } from '../verilog/elaborate/children.js';
+import type { Recording } from '../verilog/elaborate/recording.js';
+import { usageOf } from '../verilog/elaborate/usage.js';
+import { buildState, declareState, MODEL_CURE, type StateNets } from './buildState.js';
+import { StateTableBuild } from './buildStateTable.js';
+import type { LibertyCell, LibertyPin } from './cell.js';
+import { CellBuild, type CellReport } from './cellBuild.js';
+import { contextOf } from './cellNets.js';
+
+/** The nets of a cell whose logic has been built. */
+export interface BuiltCell {
+  /** The net of each pin, those of the ports first. */
+  readonly pins: readonly NetId[];
+  /** The nets of all ports, each least significant bit first. */
+  readonly boundary: readonly NetId[];
+  readonly states: readonly StateNets[];
+}
+
+/** Builds the logic of a cell: registers and latches of its states, gates of its functions. */
+export function buildCell(cell: LibertyCell, recording: Recording, report: CellReport): BuiltCell {
+  for (const problem of cell.problems) report(problem.code, problem.message, problem);
+  const build = new CellBuild(cell, recording, report);
+  const states = cell.states.map((state) => declareState(build, state));
+  const table = cell.stateTable && new StateTableBuild(build, cell.stateTable);
+  for (const [index, state] of cell.states.entries()) buildState(build, state, states[index]!);
+  const silent: LibertyPin[] = [];
+  for (const [index, pin] of cell.pins.entries()) {
+    if (pin.direction === 'input') continue;
+    const net = build.nets.pins[index]!;
+    const value = refused(build, pin) ? undefined : shownBy(build, table, pin);
+    if (value === SILENT) silent.push(pin);
+    else if (value !== undefined) recording.drive(net, GateKind.Buf, [value]);
+    // After a report nothing shall be said of nets without driver.
+    else recording.drive(net, GateKind.Unknown, []);
+  }
+  const { isRead } = usageOf(recording, new Children(), []);
+  reportSilent(
+    build,
+    // Nobody misses an internal pin that no function names.
+    silent.filter((pin) => pin.direction !== 'internal' || isRead[netOf(build, pin)] === 1),
+  );
+  return { pins: build.nets.pins, boundary: build.nets.boundary, states };
+}
+
+/** Value of a pin of which the library says nothing. */
+const SILENT = 'silent';
+
+/** The net whose value a pin shows; undefined after a report. */
+function shownBy(
+  build: CellBuild,
+  table: StateTableBuild | undefined,
+  pin: LibertyPin,
+): NetId | typeof SILENT | undefined {
+  const text = pin.function ?? pin.stateFunction;
+  if (text !== undefined) return build.function(text, contextOf(pin));
+  if (pin.internalNode === undefined || table === undefined) return SILENT;
+  return table.node(pin.internalNode, pin.inputMap);
+}
+
+const netOf = ({ cell, nets }: CellBuild, pin: LibertyPin): NetId =>
+  nets.pins[cell.pins.indexOf(pin)]!;
+
+/** Refuses pins that are not always driven by 0 or 1. */
+function refused({ report, cell }: CellBuild, pin: LibertyPin): boolean {
+  const { threeState, driverType } = pin;
+  if (threeState !== undefined) {
+    const message = `output ${pin.name} of cell ${cell.name} has three states`;
+    report('not-supported', `${message}, which is not supported; ${MODEL_CURE}`, threeState);
+    return true;
+  }
+  const type = /\bopen_(drain|source)\b/.exec(driverType?.text ?? '');
+  if (driverType === undefined || type === null) return false;
+  const message = `output ${pin.name} of cell ${cell.name} is ${type[0]}`;
+  report('not-supported', `${message}, which is not supported; ${MODEL_CURE}`, driverType);
+  return true;
+}
+
+/** Refuses a cell of which some pins have no logic. */
+function reportSilent(build: CellBuild, pins: readonly LibertyPin[]): void {
+  const { report, cell, recording } = build;
+  const [first] = pins;
+  if (first === undefined) return;
+  for (const pin of pins) recording.drive(netOf(build, pin), GateKind.Unknown, []);
+  const { clockGate } = cell;
+  const names = pins.map(({ name }) => name);
+  const shown = names.slice(0, 4).join(', ') + (names.length > 4 ? ', …' : '');
+  if (clockGate !== undefined) {
+    const message =
+      `cell ${cell.name} is a clock gate of the kind ${clockGate.text}, ` +
+      `but the library gives no logic for ${shown}; ${MODEL_CURE}`;
+    report('not-supported', message, clockGate);
+    return;
+  }
+  const which = names.length === 1 ? `pin ${shown}` : `the pins ${shown}`;
+  const message = `the library gives no logic for ${which} of cell ${cell.name}; ${MODEL_CURE}`;
+  report('not-supported', message, first);
+}
