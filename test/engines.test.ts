@@ -51,5 +51,9 @@ describe('the engines agree on random circuits', () => {
     holdsFor({ loops: true, latches: true, asynchronous: true, maxGates: 25 }, false, 200));
   it('with combinational loops and three values', () =>
     holdsFor({ loops: true, unknowns: true, maxGates: 15 }, true, 200));
+  it('with gated clocks and three values', () =>
+    holdsFor({ clocking: 'gated', latches: true, asynchronous: true }, true, 100));
+  it('with divided clocks and three values', () =>
+    holdsFor({ clocking: 'divided', asynchronous: true }, true, 100));
   it('with three values', () => holdsFor({ unknowns: true, asynchronous: true }, true, 100));
 });

@@ -1,38 +1,20 @@
 import type { Source, Span } from '../diagnostics/source.js';
-import type { Circuit, Latches, Port, Registers } from './circuit.js';
-import { Edge, Priority } from './circuit.js';
+import { BusParts, joinedType, NetType } from './busParts.js';
+import type { BusCheck, Circuit, Port } from './circuit.js';
+import { Edge } from './circuit.js';
 import { GateKind, gateInfo } from './gates.js';
 import { GrowableUint8, GrowableUint32 } from './growable.js';
-import { HierarchyBuilder } from './hierarchy.js';
-import { type NetId, NO_NET } from './ids.js';
-import { X } from './values.js';
+import { type Hierarchy, HierarchyBuilder, netName, primaryNames } from './hierarchy.js';
+import { type NetId, NO_NET, netId } from './ids.js';
+import { type LatchPins, PinTable, type RegisterPins } from './pinTable.js';
 
-/** What `CircuitBuilder.register` takes; see `Registers` for the meaning of the fields. */
-export interface RegisterPins {
-  readonly output: NetId;
-  readonly clock: NetId;
-  readonly data: NetId;
-  readonly edge?: number;
-  readonly set?: NetId;
-  readonly reset?: NetId;
-  readonly priority?: number;
-  readonly initial?: number;
-}
-
-/** What `CircuitBuilder.latch` takes; see `Latches` for the meaning of the fields. */
-export interface LatchPins {
-  readonly output: NetId;
-  readonly enable?: NetId;
-  readonly data?: NetId;
-  readonly set?: NetId;
-  readonly reset?: NetId;
-  readonly priority?: number;
-  readonly initial?: number;
-}
+export type { LatchPins, RegisterPins } from './pinTable.js';
 
 /** A driver beyond the first of a net; readers turn these into messages or a resolved bus. */
 export interface ExtraDriver {
   readonly net: NetId;
+  /** A net of its own that it drives in place of `net`. */
+  readonly driver: NetId;
   readonly sourceIndex: number;
   readonly offset: number;
 }
@@ -58,6 +40,10 @@ export class CircuitBuilder {
   readonly #registers = new PinTable();
   readonly #latches = new PinTable();
   readonly #sources: Source[] = [];
+  readonly #checks: Omit<BusCheck, 'name'>[] = [];
+  readonly #netTypes = new Map<NetId, NetType>();
+  /** What drives nets part of the time or weakly; `resolveBuses` makes gates of it. */
+  readonly busParts = new BusParts();
   #sourceIndex = 0;
   #offset = 0;
 
@@ -97,18 +83,25 @@ export class CircuitBuilder {
     return kind === UNDRIVEN ? -1 : kind;
   }
 
+  /** The fan-in of the gate that drives a net; empty for any other net. */
+  faninOf(net: NetId): NetId[] {
+    const start = this.#driverStart.get(net);
+    const count = this.#driverCount.get(net);
+    return Array.from({ length: count }, (_, i) => netId(this.#fanin.get(start + i)));
+  }
+
   /**
-   * Drives a net by a gate or a constant. A second driver is put on record in `extraDrivers` and
-   * otherwise ignored. Throws RangeError for a wrong number of fan-in nets.
+   * Drives a net by a gate or a constant. A second driver of a net drives a new net instead, and
+   * is put on record in `extraDrivers`. Throws RangeError for a wrong number of fan-in nets.
    */
   drive(net: NetId, kind: GateKind, fanin: readonly NetId[]): void {
     const { minFanin, maxFanin, name } = gateInfo(kind);
     if (fanin.length < minFanin || fanin.length > maxFanin) {
       throw new RangeError(`${name} takes ${minFanin} to ${maxFanin} inputs, got ${fanin.length}`);
     }
-    if (!this.#claim(net, kind)) return;
-    this.#driverStart.set(net, this.#fanin.length);
-    this.#driverCount.set(net, fanin.length);
+    const driven = this.#claim(net, kind);
+    this.#driverStart.set(driven, this.#fanin.length);
+    this.#driverCount.set(driven, fanin.length);
     for (const source of fanin) this.#fanin.push(source);
   }
 
@@ -121,8 +114,8 @@ export class CircuitBuilder {
 
   /** Adds an input port; its nets are driven by it. `nets[0]` is the rightmost bit. */
   input(name: string, nets: readonly NetId[], range?: { msb: number; lsb: number }): void {
-    for (const net of nets) this.#claim(net, GateKind.Input);
-    this.#inputs.push(port(name, nets, range));
+    const driven = nets.map((net) => this.#claim(net, GateKind.Input));
+    this.#inputs.push(port(name, driven, range));
   }
 
   /** Adds an output port. */
@@ -132,14 +125,77 @@ export class CircuitBuilder {
 
   /** Adds a register that drives `pins.output`. Edge is rising unless given. */
   register(pins: RegisterPins): void {
-    if (!this.#claim(pins.output, GateKind.Register)) return;
-    this.#registers.add(pins, pins.clock, pins.edge ?? Edge.Rising);
+    const output = this.#claim(pins.output, GateKind.Register);
+    this.#registers.add(pins, output, pins.clock, pins.edge ?? Edge.Rising);
   }
 
   /** Adds a latch that drives `pins.output`. */
   latch(pins: LatchPins): void {
-    if (!this.#claim(pins.output, GateKind.Latch)) return;
-    this.#latches.add(pins, pins.enable ?? NO_NET, Edge.Rising);
+    const output = this.#claim(pins.output, GateKind.Latch);
+    this.#latches.add(pins, output, pins.enable ?? NO_NET, Edge.Rising);
+  }
+
+  /**
+   * Adds something that drives a net part of the time or weakly; `traits` is what `packTraits`
+   * makes, `control` is `NO_NET` for always. The net has no other driver because of it until
+   * `resolveBuses` is called.
+   */
+  busPart(net: NetId, data: NetId, control: NetId, traits: number): void {
+    const { sourceIndex, offset } = this.#place();
+    this.busParts.add({ net, data, control, sourceIndex, offset }, traits);
+  }
+
+  /** Gives a net a type; called for the names of a net from the outermost instance inwards. */
+  setNetType(net: NetId, type: NetType): void {
+    this.#netTypes.set(net, joinedType(this.netType(net), type));
+  }
+
+  netType(net: NetId): NetType {
+    return this.#netTypes.get(net) ?? NetType.Plain;
+  }
+
+  /** The nets that have a type. */
+  typedNets(): Iterable<NetId> {
+    return this.#netTypes.keys();
+  }
+
+  /** Adds a net to `Circuit.checks`, with the place of what is built as that of the bus. */
+  check(kind: BusCheck['kind'], net: NetId, when: NetId): void {
+    this.#checks.push({ kind, net, when, ...this.#place() });
+  }
+
+  /** Moves the drivers of nets to new nets, which it returns; inputs cannot be moved. */
+  detach(nets: readonly NetId[]): NetId[] {
+    const moved = new Map<number, NetId>();
+    for (const net of nets) {
+      const to = this.net();
+      moved.set(net, to);
+      this.#kind.set(to, this.#kind.get(net));
+      for (const column of [
+        this.#driverStart,
+        this.#driverCount,
+        this.#originSource,
+        this.#originOffset,
+      ]) {
+        column.set(to, column.get(net));
+      }
+      this.#kind.set(net, UNDRIVEN);
+      this.#driverStart.set(net, 0);
+      this.#driverCount.set(net, 0);
+    }
+    this.#registers.moveOutputs(moved);
+    this.#latches.moveOutputs(moved);
+    return [...moved.values()];
+  }
+
+  /** A 1 for each net that a gate, a register, a latch or an output port reads so far. */
+  readNets(): Uint8Array {
+    const isRead = new Uint8Array(this.#kind.length);
+    for (let i = 0; i < this.#fanin.length; i++) isRead[this.#fanin.get(i)] = 1;
+    for (const { nets } of this.#outputs) for (const net of nets) isRead[net] = 1;
+    this.#registers.markReads(isRead);
+    this.#latches.markReads(isRead);
+    return isRead;
   }
 
   /** Nets that have no driver; `finish` makes them constant x. */
@@ -165,6 +221,7 @@ export class CircuitBuilder {
     for (let net = 0; net < netCount; net++) {
       if (kind[net] === UNDRIVEN) kind[net] = GateKind.Unknown;
     }
+    const hierarchy = this.hierarchy.finish();
     return {
       name,
       netCount,
@@ -174,22 +231,33 @@ export class CircuitBuilder {
       outputs: this.#outputs,
       registers: this.#registers.registers(),
       latches: this.#latches.latches(),
-      hierarchy: this.hierarchy.finish(),
+      hierarchy,
+      checks: this.#namedChecks(hierarchy, netCount),
       sources: this.#sources,
       originSource: Uint16Array.from(this.#originSource.take()),
       originOffset: this.#originOffset.take(),
     };
   }
 
-  #claim(net: NetId, kind: GateKind): boolean {
-    if (this.#kind.get(net) !== UNDRIVEN) {
-      this.extraDrivers.push({ net, sourceIndex: this.#sourceIndex, offset: this.#offset });
-      return false;
-    }
-    this.#kind.set(net, kind);
-    this.#originSource.set(net, this.#sourceIndex);
-    this.#originOffset.set(net, this.#offset);
-    return true;
+  // Returns the net that the driver is to drive: a new one where the net has a driver already.
+  #claim(net: NetId, kind: GateKind): NetId {
+    const isFirst = this.#kind.get(net) === UNDRIVEN;
+    const driven = isFirst ? net : this.net();
+    if (!isFirst) this.extraDrivers.push({ net, driver: driven, ...this.#place() });
+    this.#kind.set(driven, kind);
+    this.#originSource.set(driven, this.#sourceIndex);
+    this.#originOffset.set(driven, this.#offset);
+    return driven;
+  }
+
+  #place() {
+    return { sourceIndex: this.#sourceIndex, offset: this.#offset };
+  }
+
+  #namedChecks(hierarchy: Hierarchy, netCount: number): BusCheck[] {
+    if (this.#checks.length === 0) return [];
+    const names = primaryNames(hierarchy, netCount);
+    return this.#checks.map((check) => ({ ...check, name: netName(hierarchy, names, check.net) }));
   }
 
   // Drivers come in any order; the published list is in net order.
@@ -217,47 +285,4 @@ function port(name: string, nets: readonly NetId[], range?: { msb: number; lsb: 
     isVector,
     nets: Uint32Array.from(nets),
   };
-}
-
-/** The columns that registers and latches share. */
-class PinTable {
-  readonly #output = new GrowableUint32();
-  readonly #control = new GrowableUint32();
-  readonly #edge = new GrowableUint8();
-  readonly #data = new GrowableUint32();
-  readonly #set = new GrowableUint32();
-  readonly #reset = new GrowableUint32();
-  readonly #priority = new GrowableUint8();
-  readonly #initial = new GrowableUint8();
-
-  add(pins: LatchPins, control: NetId, edge: number): void {
-    this.#output.push(pins.output);
-    this.#control.push(control);
-    this.#edge.push(edge);
-    this.#data.push(pins.data ?? NO_NET);
-    this.#set.push(pins.set ?? NO_NET);
-    this.#reset.push(pins.reset ?? NO_NET);
-    this.#priority.push(pins.priority ?? Priority.ResetWins);
-    this.#initial.push(pins.initial ?? X);
-  }
-
-  registers(): Registers {
-    return { ...this.#common(), clock: this.#control.take(), edge: this.#edge.take() };
-  }
-
-  latches(): Latches {
-    return { ...this.#common(), enable: this.#control.take() };
-  }
-
-  #common() {
-    return {
-      count: this.#output.length,
-      output: this.#output.take(),
-      data: this.#data.take(),
-      set: this.#set.take(),
-      reset: this.#reset.take(),
-      priority: this.#priority.take(),
-      initial: this.#initial.take(),
-    };
-  }
 }

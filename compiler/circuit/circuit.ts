@@ -57,6 +57,22 @@ export interface Latches {
 }
 
 /**
+ * A net that is 1 while a bus has no value of its own: several drivers give it different values
+ * (`conflict`), or none drives it though it is read and nothing pulls it or keeps its value
+ * (`float`). The bus is x then, or what a two-valued engine reads x as.
+ */
+export interface BusCheck {
+  readonly kind: 'conflict' | 'float';
+  readonly when: number;
+  /** The bus, and its hierarchical name, `net 17` where it has none. */
+  readonly net: number;
+  readonly name: string;
+  /** Index into `sources`, and byte offset, of one of its drivers. */
+  readonly sourceIndex: number;
+  readonly offset: number;
+}
+
+/**
  * A flat netlist: numbered nets with one driver each, in typed arrays.
  *
  * Made by `CircuitBuilder.finish()` only. The fan-in of net n is
@@ -77,6 +93,8 @@ export interface Circuit {
   readonly registers: Registers;
   readonly latches: Latches;
   readonly hierarchy: Hierarchy;
+  /** One or two for each bus whose drivers can disagree or be off; empty without buses. */
+  readonly checks: readonly BusCheck[];
   readonly sources: readonly Source[];
   /** Per net: index into `sources` of the file of its driver. */
   readonly originSource: Uint16Array;

@@ -154,12 +154,18 @@ export class ReferenceEngine implements Engine {
     const settler = this.#settler;
     settler.settle();
     for (let wave = 0; wave <= this.#waveLimit; wave++) {
-      const moved = [...settler.takeMovedClocks(), ...this.#unknownClocks()];
+      const unknown = this.#unknownClocks();
+      const moved = [...settler.takeMovedClocks(), ...unknown];
       const isLast = wave === this.#waveLimit;
-      const captured = this.#capture(moved, (net) =>
-        isLast ? X : wave === 0 ? settler.valueBefore(net) : settler.value[net]!,
+      const captured = this.#capture(
+        moved,
+        (net) => (wave === 0 ? settler.valueBefore(net) : settler.value[net]!),
+        isLast,
       );
-      if (captured.length === 0) return;
+      // A pin that is x may move at any time: it is asked again with the data of after the change,
+      // and after it has become x.
+      const isAsked = moved.every((net) => settler.value[net] !== X || unknown.includes(net));
+      if (captured.length === 0 && isAsked && (wave > 0 || unknown.length === 0)) return;
       if (isLast && !this.layout.threeValued) throw new UnsettledLoop(moved);
       for (const { net, value } of captured) settler.set(net, value);
       settler.settle();
@@ -178,6 +184,7 @@ export class ReferenceEngine implements Engine {
   #capture(
     movedClocks: readonly number[],
     dataOf: (net: number) => number,
+    isLast: boolean,
   ): { net: number; value: number }[] {
     const settler = this.#settler;
     const { registers } = this.#circuit;
@@ -198,7 +205,9 @@ export class ReferenceEngine implements Engine {
         const held = surely ? data : merge(data, settler.value[net]!);
         const value = settler.evaluator.register(register, held);
         // A pin that stays x asks again until it has nothing more to say.
-        if (before !== after || value !== settler.value[net]) captured.push({ net, value });
+        if ((isLast || before === after) && value === settler.value[net]) continue;
+        const endless = isLast && this.layout.threeValued;
+        captured.push({ net, value: endless ? settler.evaluator.register(register, X) : value });
       }
     }
     return captured;

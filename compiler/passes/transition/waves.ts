@@ -31,15 +31,18 @@ export function capture(before: Settled, first: Settled, rules: WaveRules): Sett
   let data = before;
   const captures = new Captures();
   for (let wave = 0; ; wave++) {
-    const fires = firing(from, to, rules.enabled);
-    if (fires.size === 0) return to;
+    const { fires, areAsked } = firing(from, to, rules.enabled);
+    if (fires.size === 0 && areAsked) return to;
     const isLast = wave === rules.limit;
     if (isLast && !algebra.hasUnknown) {
       rules.endless([...fires.values()].reduce((any, each) => algebra.or(any, each)));
       return to;
     }
-    const registers = captures.wave(to, isLast ? undefined : data, fires);
-    if (registers.every((held, r) => held === heldRegister(to, r))) return to;
+    const registers = captures.wave(to, data, fires, isLast);
+    // A pin that is x may move at any time: it is asked again with the data of after the change,
+    // and after it has become x.
+    const isStill = registers.every((held, r) => held === heldRegister(to, r));
+    if (isStill && areAsked && (wave > 0 || !algebra.hasUnknown)) return to;
     const next = new Settled({ ...to.moment, registers, latches: heldLatches(to), before: to });
     if (isLast) return next;
     from = to;
@@ -65,16 +68,25 @@ export function heldRegister(settled: Settled, register: number): NetValue {
     : settled.moment.registers[register]!;
 }
 
-// For each register whose clock pin may have moved by its edge: where it did.
-function firing(from: Settled, to: Settled, enabled: NetValue): Map<number, NetValue> {
+interface Firing {
+  /** For each register whose clock pin may have moved by its edge: where it did. */
+  readonly fires: ReadonlyMap<number, NetValue>;
+  /** No pin has only now become what may be x. */
+  readonly areAsked: boolean;
+}
+
+function firing(from: Settled, to: Settled, enabled: NetValue): Firing {
   const { circuit, algebra } = to.moment;
   const { clock, edge, count } = circuit.registers;
   const fires = new Map<number, NetValue>();
+  let areAsked = true;
   for (let r = 0; r < count; r++) {
     const pinBefore = from.value(clock[r]!);
     const pinAfter = to.value(clock[r]!);
     // A pin that stays x may have moved: only what is surely 0 or 1 is surely at rest.
-    if (pinBefore === pinAfter && !algebra.mayBeUnknown(pinAfter)) continue;
+    const mayBeUnknown = algebra.mayBeUnknown(pinAfter);
+    if (pinBefore === pinAfter && !mayBeUnknown) continue;
+    if (pinBefore !== pinAfter && mayBeUnknown) areAsked = false;
     const moved =
       edge[r] === Edge.Rising
         ? algebra.and(algebra.not(pinBefore), pinAfter)
@@ -82,25 +94,40 @@ function firing(from: Settled, to: Settled, enabled: NetValue): Map<number, NetV
     const fired = algebra.and(enabled, moved);
     if (fired !== algebra.zero) fires.set(r, fired);
   }
-  return fires;
+  return { fires, areAsked };
 }
 
 /** What registers captured in the waves of one phase. */
 class Captures {
   readonly #last = new Map<number, { fired: NetValue; data: NetValue; held: NetValue }>();
 
-  /** What all registers hold after a wave. Without `data`, what would be captured is x. */
-  wave(to: Settled, data: Settled | undefined, fires: ReadonlyMap<number, NetValue>): Float64Array {
+  /** What all registers hold after a wave; in the last one, x where they would still change. */
+  wave(
+    to: Settled,
+    data: Settled,
+    fires: ReadonlyMap<number, NetValue>,
+    isLast: boolean,
+  ): Float64Array {
     const { circuit, algebra } = to.moment;
     const held = new Float64Array(circuit.registers.count);
     for (let r = 0; r < held.length; r++) {
       held[r] = heldRegister(to, r);
       const fired = fires.get(r);
       if (fired === undefined) continue;
-      const captured = data?.value(circuit.registers.data[r]!) ?? algebra.unknown;
-      const next = this.#capture(algebra, r, fired, held[r]!, captured);
+      const next = this.#capture(
+        algebra,
+        r,
+        fired,
+        held[r]!,
+        data.value(circuit.registers.data[r]!),
+      );
       // A set or reset that is active at the edge wins, even if the edge releases it.
-      held[r] = driverValue(to.moment, circuit.registers.output[r]!, (net) => to.value(net), next);
+      const shown = (value: NetValue): NetValue =>
+        driverValue(to.moment, circuit.registers.output[r]!, (net) => to.value(net), value);
+      const captured = shown(next);
+      held[r] = isLast
+        ? algebra.mux(algebra.differs(captured, held[r]!), held[r]!, shown(algebra.unknown))
+        : captured;
     }
     return held;
   }

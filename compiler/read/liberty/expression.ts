@@ -155,7 +155,7 @@ class ExpressionParser {
 
 const blank = /(?:\s+|\\\s*\n)*/y;
 const quotedName = /\\?"[^"\\]+\\?"/y;
-const plainName = /(?:[^\s!'&*+|^()"\\,;:[\]]+|\[[^\][]*\])+/y;
+const plainName = /(?:[^\s!'&*+|^()"\\,;:[\]{}~=/?%@#]+|\[[^\][]*\])+/y;
 
 function matchAt(pattern: RegExp, text: string, at: number): string {
   pattern.lastIndex = at;

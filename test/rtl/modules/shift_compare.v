@@ -33,12 +33,15 @@ module shift_compare #(parameter W = 8, S = 3) (
       end
       always @* begin
         to = from;
-        if (by[s])
+        if (by[s]) begin
+          if (!kind[1]) to = {W{1'b0}};
           casez (kind)
-            2'b00: to = {from[W-1-D:0], {D{1'b0}}};
-            2'b?1: to = {kind[1] ? from[W-1-D:0] : {D{1'b0}}, kind[1] ? from[W-1:W-D] : from[W-1:D]};
+            2'b00: to[W-1:D] = from[W-1-D:0];
+            2'b11: to = {from[W-1-D:0], from[W-1:W-D]};
+            2'b?1: to[W-1-D:0] = from[W-1:D];
             default: to = {{D{from[W-1]}}, from[W-1:D]};
           endcase
+        end
       end
     end
   endgenerate

@@ -1,0 +1,56 @@
+import type { Circuit } from '../../circuit/circuit.js';
+import { netName, primaryNames } from '../../circuit/hierarchy.js';
+import { spanOfNet } from '../../circuit/netSpans.js';
+import type { Span } from '../../diagnostics/source.js';
+
+/** Writes out nets of one circuit by name and place. */
+export class NetWords {
+  readonly #circuit: Circuit;
+  readonly #names: Int32Array;
+
+  constructor(circuit: Circuit) {
+    this.#circuit = circuit;
+    this.#names = primaryNames(circuit.hierarchy, circuit.netCount);
+  }
+
+  /** The name nearest to the top, or `net 17`. */
+  name(net: number): string {
+    return netName(this.#circuit.hierarchy, this.#names, net);
+  }
+
+  hasName(net: number): boolean {
+    return this.#names[net]! >= 0;
+  }
+
+  /** Where the net's driver stands. */
+  span(net: number): Span | undefined {
+    return spanOfNet(this.#circuit, net);
+  }
+
+  /** `name (file.v:12)`. */
+  placed(net: number): string {
+    const span = this.span(net);
+    if (span === undefined) return this.name(net);
+    return `${this.name(net)} (${span.source.path}:${span.source.place(span.start).line})`;
+  }
+
+  /** `a (top.v:12), b (top.v:13) and 5 more`; at most `limit` are written out (default 4). */
+  list(nets: ArrayLike<number>, limit = 4): string {
+    const shown = Array.from({ length: Math.min(limit, nets.length) }, (_, i) => nets[i]!);
+    return listText(
+      shown.map((net) => this.placed(net)),
+      nets.length,
+    );
+  }
+}
+
+/** `a, b and 5 more`, where `total` counts those shown too. */
+export function listText(shown: readonly string[], total: number): string {
+  const rest = total - shown.length;
+  return rest > 0 ? `${shown.join(', ')} and ${rest} more` : shown.join(', ');
+}
+
+/** `1 gate`, `2 gates`; a plural that takes more than an s is given. */
+export function counted(count: number, one: string, several = `${one}s`): string {
+  return `${count.toLocaleString('en-US')} ${count === 1 ? one : several}`;
+}
