@@ -33,14 +33,23 @@ export interface Engine {
   state(): Uint8Array;
 }
 
+/** Why a cycle has no result. */
+export interface Fault {
+  readonly message: string;
+  /** `FILE:LINE:COL` of what is at fault in the netlist; empty where that is not known. */
+  readonly place: string;
+}
+
 /** Thrown by `Engine.run` when a cycle has no result, such as a loop that never settles. */
-export class RunFault extends Error {
+export class RunFault extends Error implements Fault {
   /** Cycles completed by this call before the one that failed. */
   readonly completed: number;
+  readonly place: string;
 
-  constructor(completed: number, message: string) {
+  constructor(completed: number, { message, place }: Fault) {
     super(message);
     this.name = 'RunFault';
     this.completed = completed;
+    this.place = place;
   }
 }

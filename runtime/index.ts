@@ -1,4 +1,4 @@
-export { type Engine, RunFault } from './engine.js';
+export { type Engine, type Fault, RunFault } from './engine.js';
 export { type ModelLayout, type PortLayout, type RowLayout, rowStride } from './layout.js';
 export { fillRandomRows, RandomBits } from './random.js';
 export { readBits, writeBits } from './rowBits.js';

@@ -162,7 +162,7 @@ class BlockRun {
     } catch (error) {
       if (!(error instanceof RunFault)) throw error;
       if (error.completed > 0) yield this.#block(error.completed);
-      throw new RunFault(this.#cycle, error.message);
+      throw new RunFault(this.#cycle, error);
     }
     yield this.#block(cycles);
   }

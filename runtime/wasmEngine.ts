@@ -88,7 +88,7 @@ export class WasmEngine implements Engine {
         );
       }
       done += ran;
-      if (ran < count) throw new RunFault(done, this.#faultMessage());
+      if (ran < count) throw new RunFault(done, this.#model.faults[this.#exports.fault.value]!);
     }
   }
 
@@ -116,10 +116,6 @@ export class WasmEngine implements Engine {
       const start = from + row * stride;
       memory.set(stimulus.subarray(start, start + words), at + row * words);
     }
-  }
-
-  #faultMessage(): string {
-    return this.#model.faults[this.#exports.fault.value] ?? 'the cycle has no result';
   }
 
   #bytes(address: number, length: number): Uint8Array {

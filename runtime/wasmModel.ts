@@ -1,3 +1,4 @@
+import type { Fault } from './engine.js';
 import type { ModelLayout } from './layout.js';
 import type { StateMap } from './stateBits.js';
 
@@ -23,6 +24,6 @@ export interface WasmModel extends StateMap {
   readonly bytes: Uint8Array<ArrayBuffer>;
   readonly layout: ModelLayout;
   readonly memory: MemoryMap;
-  /** Messages of the faults by number. */
-  readonly faults: readonly string[];
+  /** The faults by number. */
+  readonly faults: readonly Fault[];
 }

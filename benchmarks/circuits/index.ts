@@ -1,4 +1,5 @@
 import { aes128 } from './aes128.js';
+import { mapped } from './cells/mapping/mapped.js';
 import { counter } from './counter.js';
 import { crc32 } from './crc32.js';
 import { lock } from './machine.js';
@@ -27,6 +28,13 @@ export interface Circuit {
   write(given?: Readonly<Record<string, number>>): Iterable<string>;
 }
 
+const library: Parameter = {
+  meaning: 'cells of the library: 1; with clock tree and clock gates: 2',
+  usual: 0,
+  least: 0,
+  most: 2,
+};
+
 /** The real circuits that benchmarks and checks run. */
 export const circuits: readonly Circuit[] = [
   circuit('prbs', 'pseudo-random bit sequence of ITU-T O.150', (p) => prbs(p.order!), {
@@ -38,7 +46,7 @@ export const circuits: readonly Circuit[] = [
     },
   }),
   circuit('crc32', 'bit-serial CRC-32 of IEEE 802.3', crc32),
-  circuit('counter', 'loadable 64-bit up counter', counter),
+  circuit('counter', 'loadable 64-bit up counter', counter, { library }),
   circuit('uart', 'serial transmitter and receiver', (p) => uart(p.divider!), {
     divider: { meaning: 'cycles a bit', usual: 16, least: 4, most: 65536 },
   }),
@@ -52,9 +60,10 @@ export const circuits: readonly Circuit[] = [
       dwell: { meaning: 'cycles a gate stands open', usual: 500, least: 1, most: 1e6 },
     },
   ),
-  circuit('sha256', 'SHA-256 compression, one round a cycle', sha256),
+  circuit('sha256', 'SHA-256 compression, one round a cycle', sha256, { library }),
   circuit('aes128', 'AES-128 encryption, one round a cycle', (p) => aes128(p.cores!), {
     cores: { meaning: 'cores one behind another', usual: 1, least: 1, most: 1000 },
+    library,
   }),
 ];
 
@@ -64,7 +73,11 @@ function circuit(
   make: (parameters: Readonly<Record<string, number>>) => Definition,
   parameters: Readonly<Record<string, Parameter>> = {},
 ): Circuit {
-  const build: Circuit['build'] = (given = {}) => make(complete(name, parameters, given));
+  const build: Circuit['build'] = (given = {}) => {
+    const values = complete(name, parameters, given);
+    const built = make(values);
+    return values.library ? mapped(built, { hasClockTree: values.library === 2 }) : built;
+  };
   return { name, summary, parameters, build, write: (given) => verilog(build(given)) };
 }
 

@@ -1,11 +1,16 @@
+import { mkdirSync, writeFileSync } from 'node:fs';
+import { join } from 'node:path';
 import { Readable } from 'node:stream';
 import { pipeline } from 'node:stream/promises';
+import { libraryFiles } from './cells/libraryFiles.js';
 import { circuits } from './index.js';
 
 const [name, ...settings] = process.argv.slice(2);
 const circuit = circuits.find((c) => c.name === name);
 
-if (!circuit) {
+if (name === 'cells' && settings.length === 1) {
+  writeLibrary(settings[0]!);
+} else if (!circuit) {
   fail(name === undefined ? usage() : `there is no circuit ${name}\n${usage()}`);
 } else {
   try {
@@ -15,6 +20,13 @@ if (!circuit) {
     if (error instanceof RangeError) fail(error.message);
     // A reader that has seen enough, as `head`, is no failure.
     else if (!isClosedPipe(error)) throw error;
+  }
+}
+
+function writeLibrary(folder: string): void {
+  mkdirSync(folder, { recursive: true });
+  for (const { name, chunks } of libraryFiles) {
+    writeFileSync(join(folder, name), [...chunks()].join(''));
   }
 }
 
@@ -38,6 +50,8 @@ function usage(): string {
   return [
     'Writes a circuit as gate-level Verilog to the standard output.',
     'Usage: npx tsx benchmarks/circuits/write.ts NAME [PARAMETER=NUMBER ...] > FILE.v',
+    'Writes the library of cells, as Verilog and as Liberty, into a folder.',
+    'Usage: npx tsx benchmarks/circuits/write.ts cells FOLDER',
     'Circuits, with their parameters and usual values:',
     ...rows,
   ].join('\n');

@@ -214,6 +214,11 @@ export class CircuitBuilder {
     return source && { source, start, end: start };
   }
 
+  /** The place that `originOf` tells, as index of a source and byte offset in it. */
+  placeOf(net: NetId): { readonly sourceIndex: number; readonly offset: number } {
+    return { sourceIndex: this.#originSource.get(net), offset: this.#originOffset.get(net) };
+  }
+
   /** Publishes the circuit. The builder must not be used afterwards. */
   finish(name: string): Circuit {
     const netCount = this.#kind.length;

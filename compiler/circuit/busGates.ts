@@ -103,14 +103,14 @@ export class BusGates {
   }
 
   #dominated(kind: GateKind, values: readonly Value[], dominating: NetId, neutral: NetId): Value {
-    const rest = new Set<NetId>();
-    for (const value of values) {
-      if (this.#kindOf(value) === this.#kindOf(dominating)) return dominating;
-      if (this.#kindOf(value) !== this.#kindOf(neutral)) rest.add(this.net(value));
-    }
-    const [only, ...others] = rest;
+    const isKind = (value: Value, other: NetId) => this.#kindOf(value) === this.#kindOf(other);
+    if (values.some((value) => isKind(value, dominating))) return dominating;
+    const others = values.filter((value) => !isKind(value, neutral));
+    if (others.length === 1) return others[0]!;
+    const rest = new Set(others.map((value) => this.net(value)));
+    const [only] = rest;
     if (only === undefined) return neutral;
-    if (others.length === 0) return only;
+    if (rest.size === 1) return only;
     return { kind, fanin: [...rest].sort((a, b) => a - b) };
   }
 }

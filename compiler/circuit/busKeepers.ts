@@ -14,7 +14,9 @@ const MAX_STEPS = 8;
 export function findKeepers(builder: CircuitBuilder, buses: Buses): void {
   for (const bus of buses.values()) {
     for (const part of bus.parts) {
-      if (!isSteady(part) || !isPull(part) || !feedsBack(builder, buses, part)) continue;
+      const drivesBoth = part.zero !== Strength.HighZ && part.one !== Strength.HighZ;
+      if (!isSteady(part) || !isPull(part) || !drivesBoth) continue;
+      if (!feedsBack(builder, buses, part)) continue;
       bus.storage = Math.max(bus.storage, part.zero, part.one) as Strength;
     }
     if (bus.storage <= Strength.Medium) continue;

@@ -55,14 +55,13 @@ export function resolveLevels(
   let value = floating;
   let conflict: Value = gates.zero;
   for (const level of [...levels].reverse()) {
-    const rails = railsOf(gates, level);
-    const both = rails ? gates.and(rails.zero, rails.one) : gates.zero;
-    conflict = gates.or(gates.and(gates.not(level.driven), conflict), both);
     const lower = gates.isOne(level.driven) ? undefined : value;
-    value = levelValue(gates, type, level, rails, lower);
+    const hidden = gates.isZero(conflict) ? conflict : gates.and(conflict, gates.not(level.driven));
+    const result = resolveLevel(gates, type, level, lower);
+    value = result.value;
+    conflict = gates.or(result.conflict, hidden);
   }
-  const canConflict = type !== NetType.And && type !== NetType.Or;
-  return { value: value ?? gates.unknown, conflict: canConflict ? conflict : gates.zero };
+  return { value: value ?? gates.unknown, conflict };
 }
 
 function drivenBy(gates: BusGates, term: Contribution, strength: Strength): Value {
@@ -72,14 +71,40 @@ function drivenBy(gates: BusGates, term: Contribution, strength: Strength): Valu
     : gates.and(term.enable, gates.not(term.data));
 }
 
-/** Whether something drives 0, and 1; undefined where only one thing drives, and both. */
-interface Rails {
-  readonly zero: Value;
-  readonly one: Value;
+// Each form is exact where enables and data are x: `lower` shows through as far as nothing may
+// hide it, and a value that all who may drive agree on is kept.
+function resolveLevel(
+  gates: BusGates,
+  type: NetType,
+  { strength, terms }: Level,
+  lower: Value | undefined,
+): Resolved {
+  const conflict = gates.zero;
+  const [{ data, enable }] = terms as [Contribution, ...Contribution[]];
+  const isWhole = terms.every(({ zero, one }) => zero === one);
+  if (terms.length === 1 && isWhole) {
+    const value = lower === undefined ? data : gates.mux(enable, lower, data);
+    return { value, conflict };
+  }
+  const isWired = type === NetType.And || type === NetType.Or;
+  const isSteady = isWhole && terms.every((term) => gates.isOne(term.enable));
+  if (isWired && isSteady) {
+    const inputs = terms.map((term) => term.data);
+    return { value: type === NetType.And ? gates.and(...inputs) : gates.or(...inputs), conflict };
+  }
+  const { zero, one } = railsOf(gates, strength, terms);
+  if (type === NetType.And) {
+    const raised = lower === undefined ? gates.one : gates.or(one, lower);
+    return { value: gates.and(gates.not(zero), raised), conflict };
+  }
+  const shown = lower === undefined ? gates.zero : gates.and(lower, gates.not(zero));
+  const value = gates.or(one, shown);
+  if (type === NetType.Or) return { value, conflict };
+  return withConflict(gates, value, gates.and(zero, one));
 }
 
-function railsOf(gates: BusGates, { strength, terms }: Level): Rails | undefined {
-  if (terms.length === 1 && terms[0]!.zero === terms[0]!.one) return undefined;
+/** Whether something drives 0 with a strength, and whether something drives 1. */
+function railsOf(gates: BusGates, strength: Strength, terms: readonly Contribution[]) {
   const zeros = terms.filter(({ zero }) => zero === strength);
   const ones = terms.filter(({ one }) => one === strength);
   return {
@@ -88,35 +113,10 @@ function railsOf(gates: BusGates, { strength, terms }: Level): Rails | undefined
   };
 }
 
-// Each form is exact where enables and data are x: `lower` shows through as far as nothing may
-// hide it, and a value that all who may drive agree on is kept.
-function levelValue(
-  gates: BusGates,
-  type: NetType,
-  { terms }: Level,
-  rails: Rails | undefined,
-  lower: Value | undefined,
-): Value {
-  const [{ data, enable }] = terms as [Contribution, ...Contribution[]];
-  if (rails === undefined) return lower === undefined ? data : gates.mux(enable, lower, data);
-  const { zero, one } = rails;
-  if (type === NetType.And) {
-    const isSteady = terms.every((term) => gates.isOne(term.enable) && term.zero === term.one);
-    if (isSteady) return gates.and(...terms.map((term) => term.data));
-    const raised = lower === undefined ? gates.one : gates.or(one, lower);
-    return gates.and(gates.not(zero), raised);
-  }
-  const shown = lower === undefined ? gates.zero : gates.and(lower, gates.not(zero));
-  const value = gates.or(one, shown);
-  if (type === NetType.Or) return value;
-  const both = gates.and(zero, one);
-  if (gates.isOne(both)) return gates.unknown;
-  return gates.isZero(both) ? value : { kind: GateKind.Mux, fanin: muxFanin(gates, both, value) };
+function withConflict(gates: BusGates, value: Value, conflict: Value): Resolved {
+  if (gates.isOne(conflict)) return { value: gates.unknown, conflict };
+  if (gates.isZero(conflict)) return { value, conflict };
+  // The gate is named outright: x may not be folded into the gates that two values would do with.
+  const fanin = [gates.net(conflict), gates.net(value), gates.unknown];
+  return { value: { kind: GateKind.Mux, fanin }, conflict };
 }
-
-// The gate is named outright: x may not be folded into the gates that two values would do with.
-const muxFanin = (gates: BusGates, conflict: Value, value: Value): NetId[] => [
-  gates.net(conflict),
-  gates.net(value),
-  gates.unknown,
-];

@@ -16,6 +16,14 @@ export function describeNets(circuit: Circuit, nets: ArrayLike<number>, limit = 
   return rest > 0 ? `${shown.join(', ')} and ${rest} more` : shown.join(', ');
 }
 
+/** `FILE:LINE:COL` of what drives a net; empty where that is not known. */
+export function placeOfNet(circuit: Circuit, net: number): string {
+  const source = circuit.sources[circuit.originSource[net]!];
+  if (source === undefined) return '';
+  const { line, column } = source.place(circuit.originOffset[net]!);
+  return `${source.path}:${line}:${column}`;
+}
+
 function placeOf(circuit: Circuit, net: number): string {
   const source = circuit.sources[circuit.originSource[net]!];
   if (source === undefined) return '';

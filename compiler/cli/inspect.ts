@@ -1,27 +1,59 @@
+import { dirname } from 'node:path';
 import { Command } from 'commander';
 import { designOf } from '../compile.js';
+import { levelPlot } from '../report/inspect/levelPlot.js';
+import { inspectionPage, type Paint } from '../report/inspect/page.js';
+import { writeWhole } from '../report/inspect/writeWhole.js';
 import { inspect } from '../report/inspection.js';
-import { inspectionText } from '../report/inspectionText.js';
-import { addNetlistOptions, loadCircuit, type NetlistOptions } from './netlists.js';
+import { addNetlistOptions, loadCircuit, type NetlistOptions, reason } from './netlists.js';
+import { UsageError } from './usageError.js';
+
+interface InspectOptions extends NetlistOptions {
+  readonly json?: true;
+  readonly levelPlot?: string;
+}
 
 /** The verb `inspect`: structure and problems of a netlist. */
 export function inspectCommand(): Command {
   return addNetlistOptions(new Command('inspect'))
     .description('Shows the structure of a netlist: ports, clocks, gates, registers, problems.')
-    .option('--json', 'print the same as JSON')
+    .option('--json', 'print the same as JSON, with all names')
+    .option('--level-plot <file>', 'draw gates by level and depth between registers as SVG')
     .addHelpText(
       'after',
       `
-Exit status: 0 no problem of severity error, 1 there is one, 2 the netlist cannot be read.
+Exit status: 0 no problem of severity error, 1 there is one, 2 the netlist cannot be read
+or the plot not be written.
 
 Example:
-  clockstride inspect lock.v cells.v --top lock`,
+  clockstride inspect lock.v cells.v --top lock --level-plot lock.svg`,
     )
-    .action(async (files: string[], options: NetlistOptions & { json?: true }) => {
+    .action(async (files: string[], options: InspectOptions) => {
       const { circuit, found } = await loadCircuit(files, options);
       const inspection = inspect(designOf(circuit), found);
-      const text = options.json ? JSON.stringify(inspection, null, 2) : inspectionText(inspection);
+      if (options.levelPlot !== undefined) writePlot(options.levelPlot, levelPlot(inspection));
+      const text = options.json
+        ? JSON.stringify(inspection, null, 2)
+        : inspectionPage(inspection, isColoured() ? coloured : undefined);
       process.stdout.write(`${text}\n`);
       if (inspection.problems.some(({ severity }) => severity === 'error')) process.exitCode = 1;
     });
 }
+
+function writePlot(path: string, plot: string): void {
+  try {
+    writeWhole(path, plot);
+  } catch (error) {
+    const isMissing = (error as NodeJS.ErrnoException).code === 'ENOENT';
+    const why = isMissing ? `there is no folder ${dirname(path)}` : reason(error);
+    throw new UsageError(`error: ${path} cannot be written: ${why}`);
+  }
+}
+
+// https://no-color.org
+const isColoured = (): boolean => process.stdout.isTTY && !process.env.NO_COLOR;
+
+// ECMA-48, select graphic rendition.
+const rendition = { heading: 1, error: 31, warning: 33, note: 36 } as const;
+
+const coloured: Paint = (text, part) => `\x1b[${rendition[part]}m${text}\x1b[0m`;

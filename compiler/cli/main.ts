@@ -52,7 +52,8 @@ function report(error: unknown): number {
   if (error instanceof InputError) printDiagnostics(error.diagnostics);
   else if (error instanceof UsageError || error instanceof TableError) say(error.message);
   else if (error instanceof RunFault) {
-    say(`error: cycle ${error.completed} has no result: ${error.message}`);
+    const place = error.place === '' ? '' : `${error.place}: `;
+    say(`${place}error: cycle ${error.completed} has no result: ${error.message}`);
   } else if (isSystemError(error)) {
     say(`error: ${error.path ?? 'a file'} cannot be used: ${reason(error)}`);
   } else throw error;

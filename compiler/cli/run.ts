@@ -128,8 +128,8 @@ function stimulusOf(
 }
 
 function cycleCount(text: string): number {
-  const value = Number(text.replaceAll('_', ''));
-  if (!Number.isSafeInteger(value) || value < 0 || text === '') {
+  const value = /^\d[\d_]*$/.test(text) ? Number(text.replaceAll('_', '')) : Number.NaN;
+  if (!Number.isSafeInteger(value) || value < 0 || text.trim() === '') {
     throw new InvalidArgumentError('Give a whole number from 0 on.');
   }
   return value;

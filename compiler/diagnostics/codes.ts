@@ -21,7 +21,6 @@ export const codeTable = {
     'The ending of a netlist file says nothing about its form.',
     'Use .v for Verilog, .bench for the ISCAS text form, .lib for Liberty.',
   ),
-  'option-invalid': error('An option or its value makes no sense.', 'See `--help` of the verb.'),
 
   // Common to all readers
   'syntax-error': error('The text does not follow the grammar.', 'Mend it at the place named.'),
@@ -57,6 +56,10 @@ export const codeTable = {
     'Drive it or tie it to a constant.',
   ),
   'net-multiply-driven': error('A net has several drivers.', 'Leave one of them.'),
+  'inout-as-output': warning(
+    'An inout port of the top module is driven inside; it becomes an output of the model.',
+    'Split it into an input and an output where it is both.',
+  ),
   'combinational-loop': warning(
     'Gates feed back to themselves without a register between.',
     'Nothing, where it is a latch made of gates; else break the loop with a register.',
@@ -65,11 +68,56 @@ export const codeTable = {
     'Registers have neither an initial value nor a set or reset.',
     'Give them one, or choose --power-up.',
   ),
-  'input-held': note(
-    'Data inputs have no stimulus; they are held at 0.',
-    'Use --stimulus or --random.',
+
+  // What `inspect` finds in a circuit
+  'latch-feedback': warning(
+    'A latch passes its own value back to its data while it is open.',
+    'Use an edge-triggered register, or a second latch that is open in the other phase.',
   ),
-  'clock-missing': error('No input port clocks the registers.', 'Bring the clock to a port.'),
+  'input-floating': warning(
+    'Inputs of gates, registers or latches hang on nets without driver.',
+    'Drive these nets or tie them to a constant.',
+  ),
+  'port-unconnected': warning(
+    'Nothing inside the top module reads an input port, or some bits of it.',
+    'Connect the port or remove it.',
+  ),
+  'logic-unused': note(
+    'Gates lead to no output, register or latch; outputs of cells left open are among them.',
+    'Nothing, where that is meant: such gates cost no time in a run.',
+  ),
+  'state-unused': note(
+    'No output depends on some registers or latches.',
+    'Nothing, where that is meant; else look for a missing connection.',
+  ),
+  'register-unclocked': warning(
+    'No clock port moves the clock pin of a register: it keeps its first value.',
+    'Bring a clock to it.',
+  ),
+  'clock-guessed': warning(
+    'One gate joins inputs in front of a clock pin, and no name tells which is the clock.',
+    'Give the clock port a name with clk or clock in it.',
+  ),
+  'clock-gated': note(
+    'Signals other than the clock decide whether registers see its edges.',
+    'Nothing: gating is run exactly, and adds no delay.',
+  ),
+  'clock-as-data': warning(
+    'A clock reaches data, a set, a reset or an output through gates.',
+    'Expect the level at which values are captured or sampled, mostly the inactive one.',
+  ),
+  'clock-several': note(
+    'The circuit has several clock ports, which tick together unless told otherwise.',
+    'Nothing, where they are in step; else give each its own pace with --clock.',
+  ),
+  'clock-crossing': warning(
+    'Registers capture values from registers that hang on another clock port.',
+    'Check the synchronizers by other means: a run without delays cannot show a bad one.',
+  ),
+  'name-case': note(
+    'Names differ only in the case of letters.',
+    'Rename one: tools and tables that ignore case mix them up.',
+  ),
 
   'cell-shadowed': note(
     'Several files model the same cell; the one named first decides.',
@@ -108,13 +156,6 @@ export const codeTable = {
   'task-ignored': note(
     'A system task that prints or steers a simulation has no meaning in a circuit.',
     'Nothing needs to be done.',
-  ),
-
-  // Stimulus and expectation
-  'stimulus-invalid': error('A stimulus table cannot be used.', 'Mend it at the place named.'),
-  'expectation-invalid': error(
-    'An expectation table cannot be used.',
-    'Mend it at the place named.',
   ),
 } as const satisfies Record<string, CodeInfo>;
 

@@ -65,7 +65,9 @@ export function emitModel(
       memory: { areas, buffers },
       states: programs[0]!.states,
       stateInverted: programs[0]!.stateInverted,
-      faults: programs.flatMap((program) => program.faults.map((fault) => fault.message)),
+      faults: programs.flatMap((program) =>
+        program.faults.map(({ message, place }) => ({ message, place })),
+      ),
     };
   } finally {
     module.dispose();

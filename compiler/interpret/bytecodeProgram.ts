@@ -162,7 +162,7 @@ export class BytecodeProgram {
 
   #checkFaults(cycle: number): void {
     const fault = this.#faults.findIndex((value) => this.#memory[value] !== 0);
-    if (fault >= 0) throw new RunFault(cycle, this.#program.faults[fault]!.message);
+    if (fault >= 0) throw new RunFault(cycle, this.#program.faults[fault]!);
   }
 }
 

@@ -1,3 +1,5 @@
+import type { Fault } from '../../runtime/engine.js';
+
 /** Operations of a logic graph. */
 export const LogicOp = {
   /** The constant 0; node 0 and no other. */
@@ -46,7 +48,12 @@ export interface Logic {
   /**
    * Literals that must be 0: where one is 1 the cycle has no result, for the reason beside it.
    */
-  readonly faults: readonly { readonly when: Literal; readonly message: string }[];
+  readonly faults: readonly LogicFault[];
+}
+
+/** A condition under which a cycle has no result, and why. */
+export interface LogicFault extends Fault {
+  readonly when: Literal;
 }
 
 /** How many neighbouring state bits one update takes: the bytes of a 128-bit vector. */

@@ -91,10 +91,7 @@ class ProgramWriter {
     const next = Uint32Array.from(logic.next, (literal, bit) =>
       this.#literal(literal ^ stateInverted[bit]!),
     );
-    const faults = logic.faults.map(({ when, message }) => ({
-      when: this.#literal(when),
-      message,
-    }));
+    const faults = logic.faults.map((fault) => ({ ...fault, when: this.#literal(fault.when) }));
     const last = this.#blockStart.length - 1;
     if (last === 0 || this.#blockStart.get(last) !== this.#op.length) {
       this.#blockStart.push(this.#op.length);

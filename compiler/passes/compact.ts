@@ -88,6 +88,6 @@ function rebuilt(logic: Logic, live: Uint8Array, keptState: readonly boolean[]):
       enable: moved(update.enable),
       gate: moved(update.gate),
     })),
-    faults: logic.faults.map(({ when, message }) => ({ when: moved(when), message })),
+    faults: logic.faults.map((fault) => ({ ...fault, when: moved(fault.when) })),
   };
 }

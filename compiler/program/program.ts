@@ -1,3 +1,4 @@
+import type { Fault } from '../../runtime/engine.js';
 import type { LogicState, StateUpdate } from '../logic/logic.js';
 
 /** Operations of a program. Operands are values; the result of operation i is value `firstResult + i`. */
@@ -40,7 +41,7 @@ export interface Program {
   /** See `StateUpdate` of the logic; `enable` and `gate` are values, value 1 where there is none. */
   readonly updates: readonly StateUpdate[];
   /** Values that must be 0 and why, see `Logic.faults`. */
-  readonly faults: readonly { readonly when: number; readonly message: string }[];
+  readonly faults: readonly (Fault & { readonly when: number })[];
   /**
    * First operation of each block, and the number of operations at the end. A block is what one
    * generated function holds.

@@ -9,7 +9,7 @@ import type { Emitter } from '../emit/emitter.js';
 import { createEngine, type EngineName } from '../engines.js';
 import { Departures } from './departures.js';
 import { Progress } from './progress.js';
-import type { RunSummary } from './runSummary.js';
+import { INTERRUPTED, type RunSummary } from './runSummary.js';
 
 /** How long a run may keep events waiting. */
 const PAUSE_MS = 50;
@@ -90,7 +90,7 @@ function summaryOf(
   const { cycles, signature, departures } = outlets;
   const isInterrupted = request.interrupt?.aborted && cycles !== request.cycles;
   const isDeparted = outlets.isEnough && departures?.first !== undefined;
-  const reason = isInterrupted ? 'interrupted' : isDeparted ? 'departs from the expectation' : '';
+  const reason = isInterrupted ? INTERRUPTED : isDeparted ? 'departs from the expectation' : '';
   return {
     cycles,
     seconds,

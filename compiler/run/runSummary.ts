@@ -27,6 +27,9 @@ export type Mismatch = Pick<Departure, 'cycle' | 'port' | 'expected' | 'actual'>
 
 const SHOWN = 20;
 
+/** Why a run stopped that the user has stopped. */
+export const INTERRUPTED = 'interrupted';
+
 /** A summary as lines of text. `expectation` names the table the run was compared with. */
 export function summaryText(summary: RunSummary, expectation: string | undefined): string {
   const { cycles, seconds, cyclesPerSecond, engine, powerUp } = summary;
@@ -37,7 +40,7 @@ export function summaryText(summary: RunSummary, expectation: string | undefined
   if (summary.signature !== undefined) lines.push(`signature ${summary.signature}`);
   if (summary.unknownRegisters !== undefined) lines.push(unknownText(summary.unknownRegisters));
   for (const note of summary.notes) lines.push(`note: ${note}`);
-  if (summary.stopped !== undefined && summary.mismatch === undefined) {
+  if (summary.stopped?.reason === INTERRUPTED) {
     lines.push(`stopped at cycle ${summary.stopped.cycle}: ${summary.stopped.reason}`);
   }
   if (expectation !== undefined) lines.push(verdict(summary, expectation));

@@ -28,14 +28,20 @@ export class ResponseWriter {
 
   constructor(path: string, layout: ModelLayout) {
     this.#table = new ResponseTable(layout);
+    const exists = existsSync(path);
+    const isPlain = !exists || statSync(path).isFile();
     // Renaming onto a symbolic link would replace the link.
-    this.#target = existsSync(path) ? realpathSync(path) : path;
-    const isPlain = !existsSync(path) || statSync(path).isFile();
+    this.#target = exists && isPlain ? realpathSync(path) : path;
     if (isPlain) {
       const name = `.${basename(this.#target)}.${process.pid}.partial`;
       this.#partial = join(dirname(this.#target), name);
     }
-    this.#file = openSync(this.#partial ?? this.#target, 'w');
+    try {
+      this.#file = openSync(this.#partial ?? this.#target, 'w');
+    } catch (error) {
+      // The user knows the file by the name given, not by that of the hidden one.
+      throw Object.assign(error as Error, { path });
+    }
     this.#put(this.#table.header());
   }
 

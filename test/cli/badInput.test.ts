@@ -81,6 +81,7 @@ describe('a wrong request', () => {
     ['no length', run, '--cycles'],
     ['random bits without a length', [...run, '--random', '1'], '--cycles'],
     ['a length that is no number', [...run, '--cycles', 'many'], 'many'],
+    ['a length that is blank', [...run, '--cycles', ' '], 'whole number'],
     [
       'a stimulus and random bits',
       [...held, '--random', '1', '--stimulus', 'large.csv'],

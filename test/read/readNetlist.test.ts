@@ -55,10 +55,13 @@ describe('readNetlist', () => {
     expect(problems).toEqual(['file-kind-unknown a.txt', 'file-kind-unknown netlist']);
   });
 
-  it('says that Liberty is not read', () => {
-    const { problems, message } = read({ 't.v': top, 'cells.lib': '' });
-    expect(problems).toEqual(['file-kind-unknown cells.lib']);
-    expect(message).toContain('Verilog');
+  it('takes cells from a Liberty library', () => {
+    const cells =
+      'library (t) { cell (INV) { pin (a) { } pin (y) { direction : output; function : "!a"; } } }';
+    const { circuit, problems } = read({ 't.v': top, 'cells.lib': cells });
+    expect(problems).toEqual([]);
+    expect(circuit!.sources.map(({ path }) => path)).toEqual(['t.v', 'cells.lib']);
+    expect(read({ 't.v': top, 'cells.lib': '' }).problems).toEqual(['syntax-error cells.lib']);
   });
 
   it('takes the ISCAS text form alone and without top', () => {

@@ -1,5 +1,12 @@
 import { describe, expect, it } from 'vitest';
-import { expectModel, type Model, onEveryEngine, randomInputs, rtlDesign, type Values } from './circuits.js';
+import {
+  expectModel,
+  type Model,
+  onEveryEngine,
+  randomInputs,
+  rtlDesign,
+  type Values,
+} from './circuits.js';
 
 const sizes = [1, 2, 3, 5];
 const styles = ['RING', 'DOUBLE', 'SCAN'];

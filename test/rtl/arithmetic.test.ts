@@ -1,5 +1,12 @@
 import { describe, it } from 'vitest';
-import { expectModel, type Model, randomInputs, rtlDesign, signed, type Values } from './circuits.js';
+import {
+  expectModel,
+  type Model,
+  randomInputs,
+  rtlDesign,
+  signed,
+  type Values,
+} from './circuits.js';
 
 const corners = [0x00, 0x01, 0x7f, 0x80, 0x81, 0xff];
 const cornerPairs = corners.flatMap((x) => corners.map((y) => [x, y] as const));
@@ -43,30 +50,34 @@ describe('the multiplier and accumulator', () => {
   });
 });
 
-const shifters = (): Model => ({ x, y, by, kind }) => {
-  const sx = signed(x!, 8);
-  const sy = signed(y!, 8);
-  const shifted = [x! << by!, x! >> by!, sx >> by!, (x! << by!) | (x! >> (8 - by!))][kind!]!;
-  return {
-    shifted,
-    staged: shifted,
-    lt: x! < y! ? 1 : 0,
-    le: x! <= y! ? 1 : 0,
-    eq: x === y ? 1 : 0,
-    slt: sx < sy ? 1 : 0,
-    sge: sx >= sy ? 1 : 0,
-    least: Math.min(sx, sy),
-    greatest: Math.max(sx, sy),
-    distance: Math.abs(sx - sy),
-    leading_zeros: Math.clz32(x!) - 24,
-    clamped: Math.max(-100, Math.min(100, sx)),
+const shifters =
+  (): Model =>
+  ({ x, y, by, kind }) => {
+    const sx = signed(x!, 8);
+    const sy = signed(y!, 8);
+    const shifted = [x! << by!, x! >> by!, sx >> by!, (x! << by!) | (x! >> (8 - by!))][kind!]!;
+    return {
+      shifted,
+      staged: shifted,
+      lt: x! < y! ? 1 : 0,
+      le: x! <= y! ? 1 : 0,
+      eq: x === y ? 1 : 0,
+      slt: sx < sy ? 1 : 0,
+      sge: sx >= sy ? 1 : 0,
+      least: Math.min(sx, sy),
+      greatest: Math.max(sx, sy),
+      distance: Math.abs(sx - sy),
+      leading_zeros: Math.clz32(x!) - 24,
+      clamped: Math.max(-100, Math.min(100, sx)),
+    };
   };
-};
 
 describe('shifters and comparators', () => {
   it('do as arithmetic says', async () => {
     const design = rtlDesign(['shift_compare.v']);
-    const directed = cornerPairs.map(([x, y], i): Values => ({ x, y, by: i & 7, kind: (i >> 3) & 3 }));
+    const directed = cornerPairs.map(
+      ([x, y], i): Values => ({ x, y, by: i & 7, kind: (i >> 3) & 3 }),
+    );
     const random = randomInputs(design, 13, 2000, ({ x }, chance) => (chance(20) ? { y: x! } : {}));
     await expectModel(design, shifters, [...directed, ...random]);
   });

@@ -59,23 +59,26 @@ describe('the coin acceptor', () => {
     await expectModel(design, acceptor(75), rows);
   });
 
-  it.each(engineNames)('stays in a state that its case leaves out until reset, on %s', async (name) => {
-    const design = rtlDesign(['coin_acceptor.v']);
-    const engine = await createEngine(design, name);
-    const state = powerUpState(design.circuit, 'zero');
-    design.layout.stateNames.forEach((register, i) => {
-      if (/^state\b/.test(register)) state[i] = 1;
-    });
-    engine.reset(state);
-    const rows = Array.from({ length: 30 }, (_, cycle) => ({
-      rst: cycle === 20 ? 1 : 0,
-      coin: 1,
-      refund: cycle % 2,
-    }));
-    const read = readingOf(engine, rows);
-    const accepted = rows.map((_, cycle) => read('accept', cycle));
-    expect(accepted.indexOf(1)).toBe(21);
-    expect(read('balance', 20)).toBe(0);
-    expect(read('balance', 22)).toBe(1);
-  });
+  it.each(engineNames)(
+    'stays in a state that its case leaves out until reset, on %s',
+    async (name) => {
+      const design = rtlDesign(['coin_acceptor.v']);
+      const engine = await createEngine(design, name);
+      const state = powerUpState(design.circuit, 'zero');
+      design.layout.stateNames.forEach((register, i) => {
+        if (/^state\b/.test(register)) state[i] = 1;
+      });
+      engine.reset(state);
+      const rows = Array.from({ length: 30 }, (_, cycle) => ({
+        rst: cycle === 20 ? 1 : 0,
+        coin: 1,
+        refund: cycle % 2,
+      }));
+      const read = readingOf(engine, rows);
+      const accepted = rows.map((_, cycle) => read('accept', cycle));
+      expect(accepted.indexOf(1)).toBe(21);
+      expect(read('balance', 20)).toBe(0);
+      expect(read('balance', 22)).toBe(1);
+    },
+  );
 });

@@ -1,7 +1,15 @@
 import { describe, expect, it } from 'vitest';
 import { powerUpState } from '../../compiler/circuit/powerUp.js';
 import { createEngine } from '../../compiler/engines.js';
-import { expectModel, type Model, onEveryEngine, randomInputs, readingOf, rtlDesign, type Values } from './circuits.js';
+import {
+  expectModel,
+  type Model,
+  onEveryEngine,
+  randomInputs,
+  readingOf,
+  rtlDesign,
+  type Values,
+} from './circuits.js';
 
 const parity = (value: number): number => value.toString(2).replaceAll('0', '').length & 1;
 

@@ -1,6 +1,14 @@
 import { describe, expect, it } from 'vitest';
 import { RandomBits } from '../../runtime/random.js';
-import { expectModel, onEveryEngine, type Reading, randomInputs, rtlDesign, signed, type Values } from './circuits.js';
+import {
+  expectModel,
+  onEveryEngine,
+  type Reading,
+  randomInputs,
+  rtlDesign,
+  signed,
+  type Values,
+} from './circuits.js';
 import { assembled, type Line, ops, processorModel } from './processorModel.js';
 
 const HALT = 0xf000;
@@ -179,7 +187,9 @@ describe('the processor', () => {
       const shown = putOut(rows, read).map((word) => signed(word, 16));
       expect(shown.length, engine).toBe(COUNT);
       expect(shown, engine).toEqual([...shown].sort((a, b) => a - b));
-      expect(shown.every((word) => rows.some((row) => signed(row.in_port!, 16) === word))).toBe(true);
+      expect(shown.every((word) => rows.some((row) => signed(row.in_port!, 16) === word))).toBe(
+        true,
+      );
       // The memory holds the same in the end, where the probe last went round.
       const memory = shown.map((_, place) =>
         signed(read('probe_memory', rows.length - 32 + ((place - rows.length) & 31)), 16),

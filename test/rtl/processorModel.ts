@@ -188,9 +188,7 @@ export function assembled(lines: readonly Line[]): number[] {
     if (typeof line === 'string') places.set(line, instructions.length);
     else instructions.push(line);
   }
-  return instructions.map((instruction, at) =>
-    instruction((label) => places.get(label)! - at - 1),
-  );
+  return instructions.map((instruction, at) => instruction((label) => places.get(label)! - at - 1));
 }
 
 type Registers = (rd: number, ra: number, rb: number) => Line;
@@ -219,7 +217,10 @@ export const ops = {
   sub: registers(0, 1),
   slt: registers(0, 5),
   addi: immediate(2),
-  ldi: (rd: number, value: number): Line => () => (5 << 12) | (rd << 9) | (value & 511),
+  ldi:
+    (rd: number, value: number): Line =>
+    () =>
+      (5 << 12) | (rd << 9) | (value & 511),
   ld: immediate(7),
   st: immediate(8),
   bz: branch(9),

@@ -1,5 +1,12 @@
 import { describe, expect, it } from 'vitest';
-import { expectModel, type Model, onEveryEngine, randomInputs, rtlDesign, type Values } from './circuits.js';
+import {
+  expectModel,
+  type Model,
+  onEveryEngine,
+  randomInputs,
+  rtlDesign,
+  type Values,
+} from './circuits.js';
 
 const design = rtlDesign(['storage.v']);
 

@@ -23,7 +23,11 @@ const withDivider = (module: string, ports: string, divider: number) =>
   );
 
 const transmitter = (divider: number) =>
-  withDivider('uart_tx', 'input clk, input rst_n, input data:7, input valid, output ready, output txd', divider);
+  withDivider(
+    'uart_tx',
+    'input clk, input rst_n, input data:7, input valid, output ready, output txd',
+    divider,
+  );
 const receiver = (divider: number) =>
   withDivider(
     'uart_rx',
@@ -32,31 +36,37 @@ const receiver = (divider: number) =>
   );
 
 describe('the transmitter', () => {
-  it.each([1, 3, 8])('sends frames back to back and with pauses, with divider %i', async (divider) => {
-    const design = transmitter(divider);
-    const rows: Values[] = [{ rst_n: 0, valid: 0, data: 0 }];
-    const line = [1, 1];
-    bytes.forEach((byte, i) => {
-      const pause = i % 3 === 0 ? i : 0;
-      for (let k = 0; k < pause; k++) {
-        rows.push({ rst_n: 1, valid: 0, data: ~byte & 255 });
-        line.push(1);
-      }
-      // What the inputs are while a frame goes out does not matter, up to its last cycle.
-      rows.push({ rst_n: 1, valid: 1, data: byte });
-      for (let k = 1; k < 10 * divider; k++) rows.push({ rst_n: 1, valid: k & 1, data: k & 255 });
-      line.push(...frameOf(byte).flatMap((level) => new Array<number>(divider).fill(level)));
-    });
-    const isLast = (cycle: number) => cycle === rows.length - 1;
-    await onEveryEngine(design, rows, (read, engine) => {
-      const sent = rows.map((_, cycle) => read('txd', cycle));
-      // The line is one cycle behind the inputs, and the last frame's end is not seen.
-      expect(sent, engine).toEqual(line.slice(0, rows.length));
-      const taken = rows.filter((row, cycle) => row.rst_n && row.valid && read('ready', cycle));
-      expect(taken.map(({ data }) => data), engine).toEqual(bytes);
-      expect(isLast(rows.length - 1)).toBe(true);
-    });
-  });
+  it.each([1, 3, 8])(
+    'sends frames back to back and with pauses, with divider %i',
+    async (divider) => {
+      const design = transmitter(divider);
+      const rows: Values[] = [{ rst_n: 0, valid: 0, data: 0 }];
+      const line = [1, 1];
+      bytes.forEach((byte, i) => {
+        const pause = i % 3 === 0 ? i : 0;
+        for (let k = 0; k < pause; k++) {
+          rows.push({ rst_n: 1, valid: 0, data: ~byte & 255 });
+          line.push(1);
+        }
+        // What the inputs are while a frame goes out does not matter, up to its last cycle.
+        rows.push({ rst_n: 1, valid: 1, data: byte });
+        for (let k = 1; k < 10 * divider; k++) rows.push({ rst_n: 1, valid: k & 1, data: k & 255 });
+        line.push(...frameOf(byte).flatMap((level) => new Array<number>(divider).fill(level)));
+      });
+      const isLast = (cycle: number) => cycle === rows.length - 1;
+      await onEveryEngine(design, rows, (read, engine) => {
+        const sent = rows.map((_, cycle) => read('txd', cycle));
+        // The line is one cycle behind the inputs, and the last frame's end is not seen.
+        expect(sent, engine).toEqual(line.slice(0, rows.length));
+        const taken = rows.filter((row, cycle) => row.rst_n && row.valid && read('ready', cycle));
+        expect(
+          taken.map(({ data }) => data),
+          engine,
+        ).toEqual(bytes);
+        expect(isLast(rows.length - 1)).toBe(true);
+      });
+    },
+  );
 });
 
 /** Levels of a line sampled once a cycle, where a bit lasts `length` cycles, perhaps no whole ones. */
@@ -91,9 +101,14 @@ describe('the receiver', () => {
     line.hold(1, 2 * length);
     const { rows } = line;
     await onEveryEngine(receiver(divider), rows, (read, engine) => {
-      const strobes = rows.flatMap((_, cycle) => (read('strobe', cycle) ? [read('data', cycle)] : []));
+      const strobes = rows.flatMap((_, cycle) =>
+        read('strobe', cycle) ? [read('data', cycle)] : [],
+      );
       expect(strobes, engine).toEqual(bytes);
-      expect(rows.some((_, cycle) => read('frame_error', cycle) === 1), engine).toBe(false);
+      expect(
+        rows.some((_, cycle) => read('frame_error', cycle) === 1),
+        engine,
+      ).toBe(false);
     });
   });
 
@@ -130,7 +145,9 @@ describe('a transmitter that talks to a receiver', () => {
     }));
     await onEveryEngine(design, rows, (read, engine) => {
       const given = rows.filter((row, cycle) => row.valid && read('ready', cycle));
-      const got = rows.flatMap((_, cycle) => (read('strobe', cycle) ? [read('received', cycle)] : []));
+      const got = rows.flatMap((_, cycle) =>
+        read('strobe', cycle) ? [read('received', cycle)] : [],
+      );
       expect(got.length).toBeGreaterThan(15);
       expect(got, engine).toEqual(given.map(({ data }) => data));
     });

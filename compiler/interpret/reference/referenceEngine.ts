@@ -7,7 +7,7 @@ import type { ClockPorts } from '../../circuit/clockPorts.js';
 import { type ClockSchedule, togetherSchedule } from '../../circuit/clockSchedule.js';
 import { NO_NET } from '../../circuit/ids.js';
 import { inputRowNets, outputRowNets, stateNets } from '../../circuit/modelLayout.js';
-import { describeNets } from '../../circuit/netPlaces.js';
+import { describeNets, placeOfNet } from '../../circuit/netPlaces.js';
 import { powerUpState } from '../../circuit/powerUp.js';
 import { X } from '../../circuit/values.js';
 import { waveLimit } from '../../circuit/waveLimit.js';
@@ -107,7 +107,10 @@ export class ReferenceEngine implements Engine {
     } catch (error) {
       if (!(error instanceof UnsettledLoop)) throw error;
       const nets = describeNets(this.#circuit, error.nets);
-      throw new RunFault(cycle, `the logic does not settle; these nets go on changing: ${nets}`);
+      throw new RunFault(cycle, {
+        message: `the logic does not settle; these nets go on changing: ${nets}`,
+        place: placeOfNet(this.#circuit, error.nets[0]!),
+      });
     }
   }
 

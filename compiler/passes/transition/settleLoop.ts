@@ -1,8 +1,8 @@
 import { isGate } from '../../circuit/gates.js';
 import type { NetValue } from './algebra.js';
+import type { Moment, SettledMoment } from './moment.js';
 import { planLoop } from './planLoop.js';
 import { Rounds } from './rounds.js';
-import type { Moment, Settled } from './settled.js';
 
 /**
  * Settles a combinational loop: its nets are evaluated in net order, round after round, from the
@@ -14,7 +14,7 @@ import type { Moment, Settled } from './settled.js';
  * in combinational and sequential switching circuits", IBM J. Res. Dev. 9(2), 1965).
  */
 export function settleLoop(
-  settled: Settled,
+  settled: SettledMoment,
   loop: number,
   outside: (net: number) => NetValue,
 ): NetValue[] {
@@ -42,7 +42,7 @@ export function settleLoop(
 
 // Gates start from what they were, registers and latches from what they hold now. A gate that the
 // loop evaluates before reading it may start from anything.
-function startValue(settled: Settled, net: number): NetValue {
+function startValue(settled: SettledMoment, net: number): NetValue {
   const { circuit, before, algebra, loops } = settled.moment;
   if (!isGate(circuit.kind[net]!)) return settled.held(net);
   return loops.isKept(net) ? before!.value(net) : algebra.zero;
@@ -50,7 +50,7 @@ function startValue(settled: Settled, net: number): NetValue {
 
 // A loop that has settled and reads the same as then stays: logic must not grow by each wave.
 function isUnchanged(
-  settled: Settled,
+  settled: SettledMoment,
   loop: number,
   start: NetValue[],
   outside: (net: number) => NetValue,

@@ -1,31 +1,9 @@
-import type { Circuit } from '../../circuit/circuit.js';
 import { GateKind, gateInfo } from '../../circuit/gates.js';
 import { NO_NET } from '../../circuit/ids.js';
-import { type Algebra, type NetValue, NO_VALUE } from './algebra.js';
+import { type NetValue, NO_VALUE } from './algebra.js';
 import { driverValue } from './driver.js';
-import type { LoopSet } from './loopSet.js';
+import type { Moment, SettledMoment } from './moment.js';
 import { settleLoop } from './settleLoop.js';
-
-/** What a settled moment depends on. */
-export interface Moment {
-  readonly circuit: Circuit;
-  readonly algebra: Algebra;
-  /** Per net driven by a register or latch: its index among these. */
-  readonly elementOf: Int32Array;
-  readonly loops: LoopSet;
-  /** The value of an input net; clock nets are at their level of the moment. */
-  readonly inputs: (net: number) => NetValue;
-  /** What each register holds, before asynchronous set and reset act. */
-  readonly registers: Float64Array;
-  /** What each latch holds. */
-  readonly latches: Float64Array;
-  /** The moment before; none at the start of a cycle, where all is known to have settled. */
-  readonly before?: Settled;
-  /** At the start of a cycle: what a net that a loop remembers holds. */
-  readonly kept?: (net: number) => NetValue;
-  /** Takes what is 1 where a loop does not settle. */
-  readonly unsettled: (when: NetValue, nets: Uint32Array) => void;
-}
 
 const OPEN = -2;
 
@@ -35,7 +13,7 @@ const OPEN = -2;
  * Works with an explicit stack: the depth of the netlist costs no recursion. Where a constant
  * decides (a closed latch, a gate with a controlling value), the other fan-in is not looked at.
  */
-export class Settled {
+export class Settled implements SettledMoment {
   readonly moment: Moment;
   readonly #value: Float64Array;
   readonly #stack: number[] = [];

@@ -6,9 +6,9 @@ import {
   togetherSchedule,
 } from '../../circuit/clockSchedule.js';
 import { loopsOf } from '../../circuit/loops.js';
-import { describeNets } from '../../circuit/netPlaces.js';
+import { describeNets, placeOfNet } from '../../circuit/netPlaces.js';
 import { waveLimit } from '../../circuit/waveLimit.js';
-import { FALSE, type Literal, type Logic } from '../../logic/logic.js';
+import { FALSE, type Literal, type Logic, type LogicFault } from '../../logic/logic.js';
 import { LogicBuilder, type LogicOptions } from '../../logic/logicBuilder.js';
 import {
   type Algebra,
@@ -20,8 +20,9 @@ import {
 } from './algebra.js';
 import { elementsByNet } from './elements.js';
 import { LoopSet } from './loopSet.js';
+import type { Moment } from './moment.js';
 import { RowBits } from './rowBits.js';
-import { type Moment, Settled } from './settled.js';
+import { Settled } from './settled.js';
 import { StateBits } from './stateBits.js';
 import { capture, heldLatches, heldRegister, type WaveRules, withInputs } from './waves.js';
 
@@ -89,22 +90,26 @@ interface Scene {
 interface CourseOfCycle {
   readonly sampled: readonly NetValue[];
   readonly end: Settled;
-  readonly faults: readonly { readonly when: Literal; readonly message: string }[];
+  readonly faults: readonly LogicFault[];
 }
 
 function followCycle(scene: Scene, shape: CycleShape): CourseOfCycle {
   const { circuit, algebra, row, states } = scene;
-  const faults: { when: Literal; message: string }[] = [];
+  const faults: LogicFault[] = [];
   const rules: WaveRules = {
     enabled: algebra.one,
     limit: waveLimit(circuit),
-    endless: (when) => faults.push({ when, message: 'clock pins move one another without end' }),
+    endless: (when) => {
+      const message = 'clock pins move one another without end';
+      faults.push({ when, message, place: '' });
+    },
   };
   const inputs = (active: readonly boolean[]): Moment['inputs'] =>
     inputValues(scene, active, (net) => row.value(row.bitOf(net)));
   const before = inputValues(scene, shape.start, (net) => states.previousInput(row.bitOf(net)));
   const start = atStart(scene, before, (when, nets) => {
-    faults.push({ when, message: `a loop does not settle: ${describeNets(circuit, nets)}` });
+    const message = `a loop does not settle: ${describeNets(circuit, nets)}`;
+    faults.push({ when, message, place: placeOfNet(circuit, nets[0]!) });
   });
   const applied = withInputs(start, inputs(shape.start));
   let settled = capture(start, applied, { ...rules, enabled: states.started() });

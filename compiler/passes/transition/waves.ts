@@ -2,7 +2,8 @@ import { Edge } from '../../circuit/circuit.js';
 import { NO_NET } from '../../circuit/ids.js';
 import type { Algebra, NetValue } from './algebra.js';
 import { driverValue } from './driver.js';
-import { type Moment, Settled } from './settled.js';
+import type { Moment } from './moment.js';
+import { Settled } from './settled.js';
 
 /** What the waves of one phase depend on. */
 export interface WaveRules {

@@ -27,13 +27,13 @@ export function buildCell(cell: LibertyCell, recording: Recording, report: CellR
   for (const [index, state] of cell.states.entries()) buildState(build, state, states[index]!);
   const silent: LibertyPin[] = [];
   for (const [index, pin] of cell.pins.entries()) {
-    if (pin.direction === 'input') continue;
+    if (pin.direction === 'input' || pin.direction === 'supply') continue;
     const net = build.nets.pins[index]!;
     const value = refused(build, pin) ? undefined : shownBy(build, table, pin);
     if (value === SILENT) silent.push(pin);
     else if (value !== undefined) recording.drive(net, GateKind.Buf, [value]);
     // After a report nothing shall be said of nets without driver.
-    else recording.drive(net, GateKind.Unknown, []);
+    else if (pin.direction === 'output') recording.drive(net, GateKind.Unknown, []);
   }
   const { isRead } = usageOf(recording, new Children(), []);
   reportSilent(
@@ -82,7 +82,9 @@ function reportSilent(build: CellBuild, pins: readonly LibertyPin[]): void {
   const { report, cell, recording } = build;
   const [first] = pins;
   if (first === undefined) return;
-  for (const pin of pins) recording.drive(netOf(build, pin), GateKind.Unknown, []);
+  for (const pin of pins) {
+    if (pin.direction === 'output') recording.drive(netOf(build, pin), GateKind.Unknown, []);
+  }
   const { clockGate } = cell;
   const names = pins.map(({ name }) => name);
   const shown = names.slice(0, 4).join(', ') + (names.length > 4 ? ', …' : '');

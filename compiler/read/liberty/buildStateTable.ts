@@ -4,12 +4,12 @@ import { MODEL_CURE } from './buildState.js';
 import type { LibertyStateTable } from './cell.js';
 import { type CellBuild, placeIn } from './cellBuild.js';
 import { scalarContext } from './cellNets.js';
-import { NodeTable } from './nodeTable.js';
+import { columnsOf, NodeTable } from './nodeTable.js';
 import { parseStateTable, type StateRow } from './stateTable.js';
 import type { LibertyText } from './syntax.js';
 import { wordsOf } from './words.js';
 
-/** Tables are worked out for every combination of their inputs and other nodes. */
+/** Tables are worked out for every combination of what a node depends on. */
 const MAX_INPUTS = 10;
 
 /** The state table of a cell: each node is built when a pin or function first asks for it. */
@@ -73,22 +73,26 @@ export class StateTableBuild {
     columns: readonly string[],
     place: { readonly start: number; readonly end: number },
   ): void {
-    const { inputs, nodes } = this.#table;
     const rows = this.#rows;
     if (rows === undefined) return;
-    const names = columns.filter((_, column) => column !== inputs.length + index);
+    const names = columnsOf(rows, index).map((column) => columns[column]!);
     const refuse = (reason: string): void => {
       const message = `the state table of cell ${this.#build.cell.name} is not supported: ${reason}`;
       this.#build.report('not-supported', `${message}; ${MODEL_CURE}`, this.#table);
     };
-    if (inputs.length === 0 || names.length > MAX_INPUTS) {
-      refuse(`it has ${names.length} inputs, between 1 and ${MAX_INPUTS} can be looked through`);
+    if (names.length === 0 || names.length > MAX_INPUTS) {
+      const node = this.#table.nodes[index];
+      refuse(
+        names.length === 0
+          ? `nothing gives ${node} a value`
+          : `${node} depends on ${names.length} inputs, ${MAX_INPUTS} can be looked through`,
+      );
       return;
     }
     const nets = names.map((name) => this.#resolve(name, place));
     const found = nets.filter((net) => net !== undefined);
     if (found.length < nets.length) return;
-    const table = new NodeTable(rows, inputs.length, nodes.length, index);
+    const table = new NodeTable(rows, index);
     const pins = { output, inputs: found, names, initial: 2 };
     const reason = lowerSequential(table, pins, this.#build.recording);
     if (reason !== undefined) refuse(reason);

@@ -2,8 +2,8 @@ import type { DiagnosticCode } from '../../diagnostics/codes.js';
 import type { Position } from '../../diagnostics/sourceMap.js';
 import type { LibertyText } from './syntax.js';
 
-/** Which way a pin goes; an internal one is a name inside the cell. */
-export type PinDirection = 'input' | 'output' | 'inout' | 'internal';
+/** Which way a pin goes; an internal one is a name inside the cell, a supply has no logic value. */
+export type PinDirection = 'input' | 'output' | 'inout' | 'internal' | 'supply';
 
 /** What a pin group says of the logic of its pins. */
 export interface PinLogic {
@@ -17,7 +17,7 @@ export interface PinLogic {
   readonly driverType: LibertyText | undefined;
 }
 
-/** A pin of a cell, or one bit of a bus. A supply pin is an input that no function reads. */
+/** A pin of a cell, or one bit of a bus. */
 export interface LibertyPin extends PinLogic {
   /** Such as `A`, or `A[3]` for a bit of bus A. */
   readonly name: string;

@@ -11,8 +11,8 @@ import { pruneUnused } from '../verilog/elaborate/pruning.js';
 import { Recording } from '../verilog/elaborate/recording.js';
 import { Flag, SymbolKind } from '../verilog/elaborate/symbols.js';
 import type { BlockNames, Template, TemplatePort } from '../verilog/elaborate/template.js';
-import { usageOf } from '../verilog/elaborate/usage.js';
-import { buildCell } from './buildCell.js';
+import { type Usage, usageOf, usesOf } from '../verilog/elaborate/usage.js';
+import { type BuiltCell, buildCell } from './buildCell.js';
 import type { LibertyCell, PinDirection } from './cell.js';
 import { type CellSignal, signalsOf } from './cellSignals.js';
 
@@ -39,6 +39,7 @@ export function cellTemplate(cell: LibertyCell, context: CellContext, place: Pos
   const canonical = fuseBuffers(recording, usage);
   const find = (net: number): number => canonical?.[net] ?? net;
   const boundary = Uint32Array.from(built.boundary);
+  const pruned = pruneUnused(recording, children, boundary, canonical);
   const signals = signalsOf(cell, built);
   const ports = portsOf(cell, names);
   return {
@@ -48,24 +49,41 @@ export function cellTemplate(cell: LibertyCell, context: CellContext, place: Pos
     recording,
     children,
     canonical,
-    unused: pruneUnused(recording, children, boundary, canonical),
+    unused: withoutSupplies(cell, built, usage, pruned, recording.netCount),
     ports,
     portOfName: new Map(ports.map(({ name }, port) => [name, port])),
     hasPortOrder: false,
     boundary,
-    drives: Uint8Array.from(boundary, (net) => (usage.drivers[net]! > 0 ? 1 : 0)),
-    reads: Uint8Array.from(boundary, (net) => usage.isRead[net]!),
+    ...usesOf(usage, boundary, find),
     repeats: [],
     blocks: [blockNames(cell.name, signals, find)],
     scope: scopeOf(cell, signals, recording, context),
-    drivesNet: (net) => (usage.drivers[find(net)] ?? 1) > 0,
   };
+}
+
+/** Spares each instance the nets of its supply pins, which netlists mostly leave unconnected. */
+function withoutSupplies(
+  cell: LibertyCell,
+  { pins }: BuiltCell,
+  usage: Usage,
+  pruned: Uint8Array | undefined,
+  netCount: number,
+): Uint8Array | undefined {
+  let unused = pruned;
+  for (const [index, { direction }] of cell.pins.entries()) {
+    const net = pins[index]!;
+    if (direction !== 'supply' || usage.isRead[net] === 1) continue;
+    unused ??= new Uint8Array(netCount);
+    unused[net] = 1;
+  }
+  return unused;
 }
 
 const directionFlags: Readonly<Record<Exclude<PinDirection, 'internal'>, number>> = {
   input: Flag.Input,
   output: Flag.Output,
   inout: Flag.Inout,
+  supply: Flag.Input,
 };
 
 function portsOf(cell: LibertyCell, names: NameTable): TemplatePort[] {

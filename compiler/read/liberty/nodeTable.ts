@@ -7,20 +7,36 @@ const outcomeOf: Readonly<Record<Exclude<NextSymbol, '-'>, number>> = { L: 0, H:
 const UNKNOWN = 3;
 
 /**
+ * The columns that a node depends on, besides itself: indices into the inputs of the table and
+ * then all its nodes.
+ */
+export function columnsOf(rows: readonly StateRow[], node: number): number[] {
+  const used = new Set<number>();
+  for (const { inputs, current, next } of rows) {
+    if (next[node] === '-') continue;
+    for (const [column, symbol] of [...inputs, ...current].entries()) {
+      if (symbol !== '-' && column !== inputs.length + node) used.add(column);
+    }
+  }
+  return [...used].sort((a, b) => a - b);
+}
+
+/**
  * One node of a state table, worked out for every change of one input at every combination of
  * levels: the first row that matches and says something of the node decides (as common practice
  * has it, from memory); without one it becomes unknown.
  *
- * Its inputs are those of the table and then the other nodes, in order.
+ * Its inputs are the columns that `columnsOf` gives.
  */
 export class NodeTable implements SequentialTable {
   readonly inputs: number;
   // Outcome of a change of input i, at ((i << inputs) | levels) * 2 + state.
   readonly #events: Uint8Array;
 
-  constructor(rows: readonly StateRow[], inputCount: number, nodeCount: number, node: number) {
-    this.inputs = inputCount + nodeCount - 1;
-    const masked = rows.map((row) => maskedRow(row, node));
+  constructor(rows: readonly StateRow[], node: number) {
+    const columns = columnsOf(rows, node);
+    this.inputs = columns.length;
+    const masked = rows.map((row) => maskedRow(row, columns, node));
     this.#events = new Uint8Array(this.inputs * 2 ** (this.inputs + 1));
     for (let at = 0; at < this.#events.length; at++) {
       const levels = (at >> 1) & ((1 << this.inputs) - 1);
@@ -65,11 +81,12 @@ interface MaskedRow {
 }
 
 /** The row as bits; undefined where it says nothing of the node. */
-function maskedRow(row: StateRow, node: number): MaskedRow | undefined {
+function maskedRow(row: StateRow, columns: readonly number[], node: number): MaskedRow | undefined {
   const next = row.next[node]!;
   if (next === '-') return undefined;
-  const symbols = [...row.inputs, ...row.current.filter((_, index) => index !== node)];
-  const bits = (symbol: string): number =>
+  const all = [...row.inputs, ...row.current];
+  const symbols = columns.map((column) => all[column]!);
+  const bits = (symbol: (typeof all)[number]): number =>
     symbols.reduce((sum, each, input) => (each === symbol ? sum | (1 << input) : sum), 0);
   return {
     mask: bits('L') | bits('H'),

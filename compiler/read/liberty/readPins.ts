@@ -26,9 +26,9 @@ export function readSupply(draft: CellDraft, group: LibertyGroup): void {
   const name = group.names[0]?.text ?? '';
   if (!draft.isFree(name, group)) return;
   const { start, end } = group;
-  const pin = { name, direction: 'input' as const, ...noLogic, vector: undefined, place: 0 };
+  const pin = { name, direction: 'supply' as const, ...noLogic, vector: undefined, place: 0 };
   draft.pins.push({ ...pin, start, end });
-  draft.ports.push({ ...scalarPort, name, direction: 'input', pins: [draft.pins.length - 1] });
+  draft.ports.push({ ...scalarPort, name, direction: 'supply', pins: [draft.pins.length - 1] });
 }
 
 /** Reads a bus: its bits come from its type, and may have `pin` groups of their own. */

@@ -1,7 +1,7 @@
 import { GrowableUint8, GrowableUint32 } from '../../circuit/growable.js';
 import type { Position } from '../../diagnostics/sourceMap.js';
 import type { NameId } from '../names.js';
-import type { Expression, RangeSyntax, Strength } from './syntax.js';
+import type { Expression, RangeSyntax, Strength } from './expressionSyntax.js';
 
 /** The built-in gates and switches of IEEE 1364-2005, clause 7, in a fixed order. */
 export const builtinGates = [

@@ -1,5 +1,5 @@
+import { ClockPath, type ClockRoots, portEdge } from '../../circuit/analyses/clockRoots.js';
 import { Edge } from '../../circuit/circuit.js';
-import { ClockPath, type ClockRoots, portEdge } from '../../circuit/clockRoots.js';
 import type { Design } from '../../compile.js';
 import { gatedClocks } from './gatedClocks.js';
 import type { NetWords } from './netWords.js';

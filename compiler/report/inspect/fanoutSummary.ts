@@ -1,6 +1,6 @@
+import { mostRead, readCounts } from '../../circuit/analyses/readCounts.js';
 import type { Circuit } from '../../circuit/circuit.js';
 import { gateInfo } from '../../circuit/gates.js';
-import { mostRead, readCounts } from '../../circuit/readCounts.js';
 import type { NetWords } from './netWords.js';
 
 /** A net that much reads. */

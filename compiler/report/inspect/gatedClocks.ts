@@ -1,5 +1,5 @@
+import { ClockPath, type ClockRoots } from '../../circuit/analyses/clockRoots.js';
 import type { Circuit } from '../../circuit/circuit.js';
-import { ClockPath, type ClockRoots } from '../../circuit/clockRoots.js';
 
 /** A net on clock pins that a clock port reaches through gates with other inputs. */
 export interface GatedClock {

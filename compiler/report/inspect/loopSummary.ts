@@ -1,5 +1,5 @@
+import { loopPath } from '../../circuit/analyses/loopPath.js';
 import type { Circuit } from '../../circuit/circuit.js';
-import { loopPath } from '../../circuit/loopPath.js';
 import { loopsOf, SettlingSources } from '../../circuit/loops.js';
 
 /** A combinational loop: how many nets depend on one another, and a way round. */

@@ -1,6 +1,7 @@
+import { basename } from 'node:path';
+import { spanOfNet } from '../../circuit/analyses/netSpans.js';
 import type { Circuit } from '../../circuit/circuit.js';
 import { netName, primaryNames } from '../../circuit/hierarchy.js';
-import { spanOfNet } from '../../circuit/netSpans.js';
 import type { Span } from '../../diagnostics/source.js';
 
 /** Writes out nets of one circuit by name and place. */
@@ -27,11 +28,11 @@ export class NetWords {
     return spanOfNet(this.#circuit, net);
   }
 
-  /** `name (file.v:12)`. */
+  /** `name (file.v:12)`, without the folder. */
   placed(net: number): string {
     const span = this.span(net);
     if (span === undefined) return this.name(net);
-    return `${this.name(net)} (${span.source.path}:${span.source.place(span.start).line})`;
+    return `${this.name(net)} (${basename(span.source.path)}:${span.source.place(span.start).line})`;
   }
 
   /** `a (top.v:12), b (top.v:13) and 5 more`; at most `limit` are written out (default 4). */
@@ -47,7 +48,9 @@ export class NetWords {
 /** `a, b and 5 more`, where `total` counts those shown too. */
 export function listText(shown: readonly string[], total: number): string {
   const rest = total - shown.length;
-  return rest > 0 ? `${shown.join(', ')} and ${rest} more` : shown.join(', ');
+  return rest > 0
+    ? `${shown.join(', ')} and ${rest.toLocaleString('en-US')} more`
+    : shown.join(', ');
 }
 
 /** `1 gate`, `2 gates`; a plural that takes more than an s is given. */

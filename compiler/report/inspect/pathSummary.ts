@@ -1,6 +1,6 @@
+import { deepestPath } from '../../circuit/analyses/deepestPath.js';
 import type { Circuit } from '../../circuit/circuit.js';
 import { portBitName } from '../../circuit/clockPorts.js';
-import { deepestPath } from '../../circuit/deepestPath.js';
 import { gateInfo } from '../../circuit/gates.js';
 import type { NetWords } from './netWords.js';
 
@@ -9,6 +9,7 @@ export interface PathStep {
   readonly net: string;
   /** A gate or source such as `nand`, `register`, `input`; `output` where the path ends there. */
   readonly kind: string;
+  /** Where the gate stands, for a net without a name. */
   readonly file?: string;
   readonly line?: number;
 }
@@ -27,7 +28,7 @@ export function deepestSteps(circuit: Circuit, level: Uint32Array, words: NetWor
 
 function step(circuit: Circuit, net: number, words: NetWords): PathStep {
   const named = { net: words.name(net), kind: gateInfo(circuit.kind[net]!).name };
-  const span = words.span(net);
+  const span = words.hasName(net) ? undefined : words.span(net);
   if (span === undefined) return named;
   const { source, start } = span;
   return { ...named, file: source.path, line: source.place(start).line };

@@ -1,7 +1,4 @@
-import {
-  libertyFile,
-  libertyLibrary,
-} from '../../../benchmarks/circuits/cells/liberty/library.js';
+import { libertyFile, libertyLibrary } from '../../../benchmarks/circuits/cells/liberty/library.js';
 import {
   primitivesFile,
   verilogFile,

@@ -56,9 +56,9 @@ describe('pins', () => {
     expect(pinsOf(cell)).toEqual(['input A', 'output Y A', 'output Z']);
   });
 
-  it('of supply are inputs', () => {
+  it('of supply are ports', () => {
     const cell = cellOf('pg_pin (VDD) { pg_type : primary_power; direction : inout; }');
-    expect(portsOf(cell)).toEqual(['input VDD = VDD']);
+    expect(portsOf(cell)).toEqual(['supply VDD = VDD']);
   });
 
   it('have one description each', () => {

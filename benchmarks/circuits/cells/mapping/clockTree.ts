@@ -2,8 +2,9 @@ import { cellName } from '../cell.js';
 import { cellNamed } from '../library.js';
 import type { PlacedCell } from './flipFlops.js';
 
-const readersOfLeaf = 16;
-const readersOfBranch = 6;
+/** How many pins hang on a leaf of a clock tree, at most. */
+export const readersOfLeaf = 8;
+const readersOfBranch = 3;
 
 /** A cell of the tree, with its name and the names of its nets. */
 export interface TreeCell {

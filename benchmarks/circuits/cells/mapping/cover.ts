@@ -66,8 +66,9 @@ function bestOf(
   areaBelow: (leaf: LocalNet) => number,
 ): Best | undefined {
   let best: Best | undefined;
-  for (const leaves of cuts) {
-    const match = matchOf(tableOf(graph, net, leaves), leaves.length);
+  for (const cut of cuts) {
+    const { table, leaves } = withoutUnused(tableOf(graph, net, cut), cut);
+    const match = matchOf(table, leaves.length);
     if (match === undefined) continue;
     const area = leaves.reduce((sum, leaf) => sum + areaBelow(leaf), match.area);
     if (best === undefined || area < best.area) best = { output: net, match, leaves, area };
@@ -88,6 +89,25 @@ function tableOf(graph: LogicGraph, root: LocalNet, leaves: Cut): bigint {
     return value;
   };
   return table(root);
+}
+
+/** Leaves out what makes no difference, as an input that a gate has twice may do. */
+function withoutUnused(
+  table: bigint,
+  leaves: Cut,
+): { readonly table: bigint; readonly leaves: Cut } {
+  const unused = leaves.findIndex((_, k) => {
+    const column = pinColumn(k, leaves.length);
+    return (table & column) >> (1n << BigInt(k)) === (table & ~column);
+  });
+  if (unused < 0) return { table, leaves };
+  let narrow = 0n;
+  const low = (1 << unused) - 1;
+  for (let row = 0; row < 1 << (leaves.length - 1); row++) {
+    const from = (row & low) | ((row & ~low) << 1);
+    narrow |= ((table >> BigInt(from)) & 1n) << BigInt(row);
+  }
+  return withoutUnused(narrow, leaves.toSpliced(unused, 1));
 }
 
 function chosen(best: ReadonlyMap<LocalNet, Best>, roots: Iterable<LocalNet>): Covering[] {

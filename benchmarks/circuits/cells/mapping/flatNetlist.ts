@@ -1,5 +1,5 @@
 import { cellName } from '../cell.js';
-import { ClockTree, type TreeCell } from './clockTree.js';
+import { ClockTree, readersOfLeaf, type TreeCell } from './clockTree.js';
 import type { FlatDesign, FlatNet, Place } from './flatDesign.js';
 import type { PlacedCell } from './flipFlops.js';
 import { escaped, FlatNames } from './names.js';
@@ -15,7 +15,6 @@ export interface MappingOptions {
 const cellsPerFill = 25;
 const cellsPerTap = 200;
 const wiresPerLine = 8;
-const fewReaders = 32;
 
 /** Writes a flat design as a layout flow would: one module of cells with named connections. */
 export class FlatNetlist {
@@ -99,7 +98,7 @@ export class FlatNetlist {
   }
 
   *#tapAndDiode(number: number, net: string): Generator<string> {
-    yield `  (* keep *)${this.#physical('tap', 1)}`;
+    yield `  (* keep *) ${this.#physical('tap', 1).trimStart()}`;
     yield this.#physical('decap', number % (2 * cellsPerTap) === 0 ? 4 : 8);
     if (net !== '') yield this.#instance(cellName('antenna', 1), `diode_${number}`, [['a', net]]);
   }
@@ -112,7 +111,7 @@ export class FlatNetlist {
   }
 
   #treeCell({ cell, name, pins }: TreeCell): string {
-    return `  (* dont_touch = "true" *)${this.#instance(cell.name, name, pins)}`;
+    return `  (* dont_touch = "true" *) ${this.#instance(cell.name, name, pins).trimStart()}`;
   }
 
   #physical(family: string, drive: number): string {
@@ -131,7 +130,7 @@ export class FlatNetlist {
         ] as const)
       : [];
     const pins = [...connections, ...power].map(([pin, net]) => `.${pin}(${net})`);
-    return `  ${cell} ${name} (${pins.join(', ')});`;
+    return `  ${cell} ${name.trimEnd()} (${pins.join(', ')});`;
   }
 
   /** Buffers for bits of output ports whose net has another port or a constant for its name. */
@@ -171,7 +170,7 @@ export class FlatNetlist {
         }
       }
     }
-    const many = [...readers].filter(([, count]) => count > fewReaders);
+    const many = [...readers].filter(([, count]) => count > readersOfLeaf);
     return new Map(
       many.map(([net, count], i) => [
         net,

@@ -27,7 +27,7 @@ for (const [smallest] of families.values()) addMatches(smallest!);
 function addMatches(cell: LogicCell): void {
   const pins = pinNames(cell, 'input');
   const [only, ...others] = cell.functions;
-  if (others.length > 0 || pins.length === 0 || forClocksAlone.test(cell.family)) return;
+  if (others.length > 0 || forClocksAlone.test(cell.family)) return;
   const area = areaOf(cell);
   for (const order of permutations(pins)) {
     const key = keyOf(truthTable(only!.is, order), pins.length);

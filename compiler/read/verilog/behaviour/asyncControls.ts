@@ -31,9 +31,10 @@ export interface Controls {
 /**
  * Finds out what the edges of an event list are for.
  *
- * The clock is the one whose signal the body does not read. Each other one must, while it is
- * active and those of higher priority are not, give every bit a constant or leave it alone. So the
- * body is executed with that signal held active, which works for any way of writing the tests.
+ * The clock is the one whose signal the body does not read, by itself or in routines that it
+ * calls. Each other one must, while it is active and those of higher priority are not, give every
+ * bit a constant or leave it alone. So the body is executed with that signal held active, which
+ * works for any way of writing the tests.
  */
 export function findControls(
   body: Statement,
@@ -45,25 +46,50 @@ export function findControls(
     return { event, net, level: event.edge === 'posedge' ? 1 : 0 };
   });
   if (edges.length === 1) return { clock: edges[0]!, asynchronous: [] };
-  const read = netsNamed(body, context);
-  const clocks = edges.filter((edge) => !read.has(edge.net));
-  const clock = clocks[0];
-  if (clock === undefined || clocks.length > 1) {
-    const message =
-      clock === undefined
-        ? 'no edge here can be the clock, because the body reads all these signals'
-        : 'several of these edges could be the clock, because the body reads none of them';
-    const place = { start: events[0]!.start, end: events.at(-1)!.end };
-    const way = 'test every set and reset by an if, and the clock nowhere';
-    refuse(context, place, `${message}; ${way}`);
-    return undefined;
-  }
+  const clock = clockAmong(edges, body, context);
+  if (clock === undefined) return undefined;
   const asynchronous = inPriority(
     body,
     edges.filter((edge) => edge !== clock),
     context,
   );
   return asynchronous && { clock, asynchronous };
+}
+
+function clockAmong(
+  edges: readonly EdgeNet[],
+  body: Statement,
+  context: Context,
+): EdgeNet | undefined {
+  const place = { start: edges[0]!.event.start, end: edges.at(-1)!.event.end };
+  if (new Set(edges.map(({ net }) => net)).size < edges.length) {
+    const message =
+      'no register captures at several edges of one signal; use an always for each edge, and ' +
+      'choose between what they assign';
+    refuse(context, place, message);
+    return undefined;
+  }
+  const unread = (nets: ReadonlySet<NetId>) => edges.filter((edge) => !nets.has(edge.net));
+  let clocks = unread(netsNamed(body, context));
+  // The names in the text mostly tell; a routine or a select in it takes a closer look.
+  if (clocks.length !== 1) clocks = unread(netsRead(body, context));
+  const [clock, ...others] = clocks;
+  if (clock !== undefined && others.length === 0) return clock;
+  const message =
+    clock === undefined
+      ? 'no edge here can be the clock, because the body reads all these signals'
+      : 'several of these edges could be the clock, because the body does not read their signals';
+  const way = 'test every set and reset by an if, and the clock nowhere';
+  refuse(context, place, `${message}; ${way}`);
+  return undefined;
+}
+
+/** The bits that a body reads, in routines too, before it assigns them. */
+function netsRead(body: Statement, context: Context): ReadonlySet<NetId> {
+  const { places } = context.store;
+  const run = freshRun(context, { clocked: true, places });
+  run.services.execute(body, run);
+  return run.store.reads;
 }
 
 function inPriority(

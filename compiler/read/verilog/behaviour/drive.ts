@@ -15,14 +15,18 @@ export function driveBit(key: NetId, value: NetId, context: Context): void {
 }
 
 /**
- * Drives a bit by its last value if it is of the index of an unrolled loop; returns whether it is.
+ * Drives a bit of the index of an unrolled loop by its last value; returns whether that is done.
  *
- * Such an index is no state, and several processes may use one variable for their loops.
+ * Such an index is no state, and several processes may use one variable for their loops: the first
+ * one drives it. An index whose last value depends on signals, because `disable` leaves the loop,
+ * is to be driven as any other variable.
  */
 export function driveIndex(key: NetId, entry: Entry, context: Context): boolean {
   const { store, logic } = context;
-  if (!store.loopIndexes.has(key) || logic.valueOf(entry.value) === undefined) return false;
-  if (!logic.sink.isDriven(key)) driveBit(key, entry.value, context);
+  if (!store.loopIndexes.has(key)) return false;
+  if (logic.sink.isDriven(key)) return true;
+  if (logic.valueOf(entry.value) === undefined) return false;
+  driveBit(key, entry.value, context);
   return true;
 }
 

@@ -128,11 +128,25 @@ function refuseStatement(
       );
       break;
     default:
-      refuse(
-        context,
-        place,
-        `procedural \`${statement.keyword}\` is not possible in a circuit; ` +
-          'use an ordinary assignment under a condition',
+      refuse(context, place, proceduralRefusal(statement.keyword));
+  }
+}
+
+function proceduralRefusal(keyword: string): string {
+  switch (keyword) {
+    case 'fork':
+      return '`fork` is not possible in a cycle model; use begin, and `<=` for what goes side by side';
+    case '->':
+      return 'a named event is not possible in a circuit; set a register for one cycle instead';
+    case '@':
+      return (
+        'an assignment that waits is not possible in a cycle model; ' +
+        'keep the value in a register until then'
+      );
+    default:
+      return (
+        `procedural \`${keyword}\` is not possible in a circuit; ` +
+        'use an ordinary assignment under a condition'
       );
   }
 }

@@ -1,4 +1,6 @@
+import { PartKind } from '../../../circuit/busParts.js';
 import { GateKind } from '../../../circuit/gates.js';
+import { type NetId, NO_NET } from '../../../circuit/ids.js';
 import {
   evaluateConstant,
   lowerAlways,
@@ -8,8 +10,10 @@ import {
 } from '../behaviour/index.js';
 import type { Expression } from '../syntax.js';
 import type { BlockScope } from './blockScope.js';
-import type { ModuleBody } from './body.js';
+import type { Located, ModuleBody } from './body.js';
 import { forEachTarget } from './expressions.js';
+import { type FloatingBit, lowerFloating, mayFloat } from './floating.js';
+import { type Strengths, strengthsOf } from './strengths.js';
 import { ensureDeclared } from './terminals.js';
 
 /** Declares the nets that only the left side of an `assign` names (clause 4.5). */
@@ -23,17 +27,10 @@ export function declareTargets(body: ModuleBody): void {
 
 /** Builds the continuous assignments, those in net declarations first (clause 6.1). */
 export function lowerAssigns(body: ModuleBody): void {
-  for (const { scope, target, value } of body.netValues) {
-    lowerAssign(body, scope, target, value, target.start);
+  for (const { scope, target, value, strength } of body.netValues) {
+    lowerAssign(body, scope, { target, value, strength, start: target.start });
   }
-  for (const { scope, item } of body.assigns) {
-    if (item.strength?.zero === 'highz' || item.strength?.one === 'highz') {
-      const message = 'an assignment with strength highz is not supported: its value can be z';
-      body.report('not-supported', message, item.start, item.end);
-      continue;
-    }
-    lowerAssign(body, scope, item.target, item.value, item.start);
-  }
+  for (const { scope, item } of body.assigns) lowerAssign(body, scope, item);
 }
 
 /** Builds the processes, once all power-up values are known. */
@@ -48,22 +45,59 @@ export function lowerProcesses(body: ModuleBody): void {
   }
 }
 
+type Assign = Pick<Located<'assign'>['item'], 'target' | 'value' | 'strength' | 'start'>;
+
 function lowerAssign(
   body: ModuleBody,
   scope: BlockScope,
-  target: Expression,
-  value: Expression,
-  start: number,
+  { target, value, strength, start }: Assign,
 ): void {
   body.buildAt(start);
   const targets = lowerTarget(target, scope);
   if (targets === undefined) return;
+  const strengths = strengthsOf(strength);
+  if (mayFloat(value)) {
+    const bits = lowerFloating(value, scope, targets.length);
+    body.buildAt(start);
+    for (const [bit, net] of targets.entries()) driveFloating(body, net, bits[bit]!, strengths);
+    return;
+  }
   const values = lowerExpression(value, scope, targets.length);
   // Lowering moves the origin to parts of the value.
   body.buildAt(start);
+  const { builder } = body;
+  const isCopy = isBare(value);
   for (const [bit, net] of targets.entries()) {
-    body.builder.drive(net, GateKind.Buf, [values[bit]!]);
+    if (strengths !== undefined) {
+      builder.busPart(net, values[bit]!, NO_NET, { kind: PartKind.Driver, ...strengths });
+      continue;
+    }
+    if (isCopy) body.copies.push(builder.driverCount);
+    builder.drive(net, GateKind.Buf, [values[bit]!]);
   }
+}
+
+/** Drives a bit that is z while its enable is 0. */
+function driveFloating(
+  { builder, copies }: ModuleBody,
+  net: NetId,
+  { data, enable }: FloatingBit,
+  strengths: Strengths | undefined,
+): void {
+  const kind = builder.kindOf(enable);
+  if (kind === GateKind.Zero) return;
+  if (builder.isDeclared(data)) copies.push(builder.driverCount);
+  if (kind === GateKind.One && strengths === undefined) builder.drive(net, GateKind.Buf, [data]);
+  else {
+    const control = kind === GateKind.One ? NO_NET : enable;
+    builder.busPart(net, data, control, { kind: PartKind.Driver, ...strengths });
+  }
+}
+
+/** Whether an expression is a net or several, as they are. */
+function isBare(value: Expression): boolean {
+  if (value.kind === 'concat') return value.parts.every(isBare);
+  return value.kind === 'name' || value.kind === 'select' || value.kind === 'part';
 }
 
 /** `reg q = 1;` is short for an `initial` assignment (clause 6.2.1). */

@@ -25,6 +25,8 @@ export interface ScopeHost extends Elaboration {
   readonly blocks: readonly BlockScope[];
   /** The meaning of `path[at] …` inside an instance, in nets of this module. */
   bindingInside(instance: number, path: readonly NameId[], at: number): Binding | undefined;
+  /** The meaning of a path that begins above the module, in nets of this module. */
+  bindingAbove?(path: readonly NameId[]): Binding | undefined;
   report(code: DiagnosticCode, message: string, start: Position, end: Position): void;
 }
 
@@ -67,10 +69,12 @@ export class BlockScope implements Scope {
 
   resolve(path: readonly NameId[]): Binding | undefined {
     const owner = this.owner(path[0]!);
-    if (owner !== undefined) return owner.member(path, 0);
+    const own = owner?.member(path, 0);
+    if (own !== undefined || path.length === 1) return own;
     // A module may name itself at the front of a path.
     const { blocks, moduleName } = this.shared;
-    return path[0] === moduleName && path.length > 1 ? blocks[0]!.member(path, 1) : undefined;
+    const named = path[0] === moduleName ? blocks[0]!.member(path, 1) : undefined;
+    return named ?? this.shared.bindingAbove?.(path);
   }
 
   block(name: NameId): BlockScope | undefined {

@@ -1,4 +1,3 @@
-import type { GateKind } from '../../../circuit/gates.js';
 import { GrowableUint32 } from '../../../circuit/growable.js';
 import type { NetId } from '../../../circuit/ids.js';
 import type { DiagnosticCode } from '../../../diagnostics/codes.js';
@@ -6,14 +5,16 @@ import type { Diagnostic, Diagnostics } from '../../../diagnostics/diagnostics.j
 import type { Position, SourceMap } from '../../../diagnostics/sourceMap.js';
 import type { NameId, NameTable } from '../../names.js';
 import type { Binding } from '../scope.js';
-import type { Expression, Item, ModuleSyntax } from '../syntax.js';
-import { BlockScope, type ScopeHost } from './blockScope.js';
+import type { Expression, Item, ModuleSyntax, Strength } from '../syntax.js';
+import { BlockScope } from './blockScope.js';
 import { Children } from './children.js';
 import type { Design } from './design.js';
 import { imported } from './imports.js';
 import { wordSpan } from './messages.js';
+import { bindingAbove, type Outer, type OuterHost } from './outer.js';
 import { Recording } from './recording.js';
 import { SymbolKind, type SymbolTable } from './symbols.js';
+import type { TemplatePort } from './template.js';
 
 /** An item and the scope it stands in. */
 export interface Located<Kind extends Item['kind']> {
@@ -26,6 +27,15 @@ export interface DeclaredValue {
   readonly scope: BlockScope;
   readonly target: Expression;
   readonly value: Expression;
+  readonly strength?: Strength | undefined;
+}
+
+/** An input port of a child that no connection names. */
+export interface OpenInput {
+  readonly child: number;
+  readonly port: TemplatePort;
+  /** Index of the instance in the module's table. */
+  readonly instance: number;
 }
 
 /** Value in `ModuleBody.placed` of an instance that could not be placed. */
@@ -35,9 +45,10 @@ export const NOT_PLACED = 0xffffffff;
  * A module while it is elaborated for one set of parameter values: its scopes, the work that is
  * left, and the recording of its logic.
  */
-export class ModuleBody implements ScopeHost {
+export class ModuleBody implements OuterHost {
   readonly design: Design;
   readonly module: ModuleSyntax;
+  readonly outer: Outer | undefined;
   readonly builder = new Recording();
   readonly children = new Children();
   readonly initialValues = new Map<NetId, 0 | 1>();
@@ -64,12 +75,20 @@ export class ModuleBody implements ScopeHost {
   readonly placed = new GrowableUint32(2);
   /** Length of the instances that are arrays, by the value of their symbol. */
   readonly arrayLengths = new Map<number, number>();
-  /** Nets with a `pullup` (One) or `pulldown` (Zero). */
-  readonly pulls = new Map<NetId, GateKind>();
+  /** Drivers of the recording that hand on a net as it is: z too, where that net is a bus. */
+  readonly copies = new GrowableUint32(2);
 
-  constructor(design: Design, module: ModuleSyntax) {
+  /** Inputs of instances that nothing is connected to. */
+  readonly openInputs: OpenInput[] = [];
+  /** Places an instance before its turn, for a name that leads into it. */
+  placeEarly: ((instance: number) => void) | undefined;
+  /** Own nets by the net of the module around this one that they stand for. */
+  readonly outerNets = new Map<NetId, NetId>();
+
+  constructor(design: Design, module: ModuleSyntax, outer: Outer | undefined) {
     this.design = design;
     this.module = module;
+    this.outer = outer;
     this.blocks.push(new BlockScope(this, undefined, 0, module.name));
   }
 
@@ -119,11 +138,25 @@ export class ModuleBody implements ScopeHost {
   }
 
   bindingInside(instance: number, path: readonly NameId[], at: number): Binding | undefined {
-    const child = instance === NOT_PLACED ? NOT_PLACED : this.placed.get(instance);
+    if (instance === NOT_PLACED) return undefined;
+    if (this.placed.get(instance) === NOT_PLACED) this.placeEarly?.(instance);
+    const child = this.placed.get(instance);
     if (child === NOT_PLACED) return undefined;
     const template = this.design.templates[this.children.template(child)]!;
     const binding = template.scope?.member(path, at);
     return binding && imported(binding, child, template, this.children, this.builder);
+  }
+
+  bindingAbove(path: readonly NameId[]): Binding | undefined {
+    return bindingAbove(this, path);
+  }
+
+  ownNet(outside: NetId): NetId {
+    const known = this.outerNets.get(outside);
+    if (known !== undefined) return known;
+    const net = this.builder.declare(1);
+    this.outerNets.set(outside, net);
+    return net;
   }
 
   text(name: NameId): string {

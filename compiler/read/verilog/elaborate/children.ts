@@ -9,6 +9,8 @@ export interface Import {
   readonly net: NetId;
 }
 
+const noImports: readonly Import[] = [];
+
 /**
  * The instances inside a module, as columns: which template, under which name, and the parent's
  * net for each net of the template's boundary (`NO_NET` where unconnected).
@@ -22,6 +24,7 @@ export class Children {
   readonly #portStart = new GrowableUint32(2);
   readonly #ports = new GrowableUint32(8);
   readonly #imports = new Map<number, Import[]>();
+  readonly #reached = new Map<NetId, { readonly child: number; readonly childNet: NetId }>();
 
   get count(): number {
     return this.#template.length;
@@ -77,9 +80,9 @@ export class Children {
     for (const imports of this.#imports.values()) for (const { net } of imports) visit(net);
   }
 
-  /** Nets of the child that the parent reaches by hierarchical names. */
+  /** Nets of the child that hierarchical names make one with nets of the parent. */
   imports(child: number): readonly Import[] {
-    return this.#imports.get(child) ?? [];
+    return this.#imports.get(child) ?? noImports;
   }
 
   /**
@@ -92,14 +95,26 @@ export class Children {
       if (known !== NO_NET) return known;
       const net = make();
       this.setPort(child, place, net);
+      this.#reached.set(net, { child, childNet });
       return net;
     }
-    const imports = this.#imports.get(child) ?? [];
-    const known = imports.find((each) => each.childNet === childNet);
+    const known = this.imports(child).find((each) => each.childNet === childNet);
     if (known !== undefined) return known.net;
     const net = make();
-    imports.push({ childNet, net });
-    this.#imports.set(child, imports);
+    this.adopt(child, childNet, net);
+    this.#reached.set(net, { child, childNet });
     return net;
+  }
+
+  /** Lets a net of the child that is no port be one with a net of the parent. */
+  adopt(child: number, childNet: NetId, net: NetId): void {
+    const imports = this.#imports.get(child);
+    if (imports === undefined) this.#imports.set(child, [{ childNet, net }]);
+    else imports.push({ childNet, net });
+  }
+
+  /** The net of a child for which a net of the parent was made by a hierarchical name. */
+  reached(net: NetId): { readonly child: number; readonly childNet: NetId } | undefined {
+    return this.#reached.get(net);
   }
 }

@@ -4,6 +4,7 @@ import { ModuleBody } from './body.js';
 import { complete } from './complete.js';
 import { connectInstances } from './connecting.js';
 import type { Design } from './design.js';
+import type { Outer } from './outer.js';
 import type { Overrides } from './overrides.js';
 import { nameInstances, placeInstances } from './placing.js';
 import { bindPorts } from './ports.js';
@@ -15,8 +16,9 @@ export function compileModule(
   design: Design,
   module: ModuleSyntax,
   overrides: Overrides,
+  outer: Outer | undefined,
 ): Template {
-  const body = new ModuleBody(design, module);
+  const body = new ModuleBody(design, module, outer);
   declareModule(body, overrides);
   nameInstances(body);
   const boundary = bindPorts(body);

@@ -1,27 +1,39 @@
+import { type NetId, netId } from '../../../circuit/ids.js';
 import { blockNamesOf } from './blockNames.js';
 import type { ModuleBody } from './body.js';
-import { resolveConflicts } from './conflicts.js';
-import { driveDefaults, driveSupplies, type NetClasses, netClassesOf } from './defaults.js';
+import { checkConflicts } from './conflicts.js';
+import { handOnFloating } from './copies.js';
+import {
+  countTypes,
+  driveDefaults,
+  driveSupplies,
+  type NetClasses,
+  netClassesOf,
+  netTypesOf,
+} from './defaults.js';
 import { fuseBuffers } from './fuseBuffers.js';
 import type { Boundary } from './ports.js';
 import { pruneUnused } from './pruning.js';
-import type { Repeat, Template } from './template.js';
+import { Drive, type Repeat, type Template } from './template.js';
 import { reportUndriven } from './undriven.js';
-import { usageOf } from './usage.js';
+import { type Usage, usageOf, usesOf } from './usage.js';
 
 /** Turns what was recorded of a module into a template: every net has one driver at most. */
 export function complete(body: ModuleBody, boundary: Boundary): Template {
   const { builder, children, design, module } = body;
   const classes: NetClasses = netClassesOf(body);
   driveSupplies(body, classes);
-  resolveConflicts(body, usageOf(builder, children, design.templates), classes);
-  const usage = usageOf(builder, children, design.templates);
-  driveDefaults(body, usage, classes, boundary);
-  reportUndriven(body, usage, boundary);
+  const usage = countUsage(body, classes);
+  checkConflicts(body, usage, classes);
+  driveDefaults(body, usage, boundary);
   const canonical = fuseBuffers(builder, usage);
   const find = (net: number): number => canonical?.[net] ?? net;
   const nets = Uint32Array.from(boundary.nets, find);
-  return {
+  const outerNets = [...body.outerNets].map(([outside, net]) => ({
+    net: netId(find(net)),
+    outside,
+  }));
+  const template: Template = {
     name: body.text(module.name),
     isCell: module.isCell,
     recording: builder,
@@ -32,14 +44,63 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
     portOfName: boundary.portOfName,
     hasPortOrder: true,
     boundary: nets,
-    drives: Uint8Array.from(nets, (net) => (usage.drivers[net]! > 0 ? 1 : 0)),
-    reads: Uint8Array.from(nets, (net) => usage.isRead[net]!),
+    ...withLateNets(body, usage, usesOf(usage, nets, find)),
     repeats: repeatsOf(nets),
     blocks: blockNamesOf(body, find),
     scope: body.root,
-    // Nets that come later stand for nets of instances, which a hierarchical name has reached.
-    drivesNet: (net) => (usage.drivers[find(net)] ?? 1) > 0,
+    netTypes: netTypesOf(classes, find),
+    ...(outerNets.length > 0 && { outerNets }),
   };
+  const { driven } = design;
+  markDriven(body, usage);
+  design.atEnd(() => reportUndriven(body, usage, boundary, (net) => driven.has(template, net)));
+  return template;
+}
+
+// Nets that come later stand for nets of instances, which a hierarchical name has reached.
+function withLateNets(
+  { children, design }: ModuleBody,
+  usage: Usage,
+  uses: ReturnType<typeof usesOf>,
+): ReturnType<typeof usesOf> {
+  const inside = (net: NetId) => {
+    const { child, childNet } = children.reached(net)!;
+    return { template: design.templates[children.template(child)]!, childNet };
+  };
+  return {
+    ...uses,
+    driveOf: (net) => {
+      if (usage.knows(net)) return uses.driveOf(net);
+      const { template, childNet } = inside(net);
+      return template.driveOf(childNet);
+    },
+    readsNet: (net) => {
+      if (usage.knows(net)) return uses.readsNet(net);
+      const { template, childNet } = inside(net);
+      return template.readsNet(childNet);
+    },
+  };
+}
+
+/** Puts the nets of instances on record that are driven here, which their modules do not know. */
+function markDriven({ children, design }: ModuleBody, usage: Usage): void {
+  for (let child = 0; child < children.count; child++) {
+    for (const { childNet, net } of children.imports(child)) {
+      if (usage.driveOf(net) === Drive.None) continue;
+      design.driven.add(design.templates[children.template(child)]!, childNet);
+    }
+  }
+}
+
+function countUsage(body: ModuleBody, classes: NetClasses): Usage {
+  const { builder, children, design } = body;
+  const count = (): Usage => {
+    const usage = usageOf(builder, children, design.templates);
+    countTypes(usage, classes);
+    return usage;
+  };
+  const usage = count();
+  return handOnFloating(body, usage) ? count() : usage;
 }
 
 /** The places of a boundary where a net stands that stood before. */

@@ -184,7 +184,7 @@ function joinRepeats(body: ModuleBody, { child, count, template }: Connected): v
   }
 }
 
-/** Gives open inputs what `unconnected_drive` says, and warns of those that are read. */
+/** Gives open inputs what `unconnected_drive` says. */
 function finishUnconnected(body: ModuleBody, connected: Connected): void {
   const { child, count, template, instance } = connected;
   const { children, module } = body;
@@ -199,15 +199,6 @@ function finishUnconnected(body: ModuleBody, connected: Connected): void {
           children.setPort(element, port.offset + bit, net);
         }
       }
-    } else if (isRead(template, port)) {
-      const own = body.text(module.instances.name(instance));
-      const message = `input ${body.text(port.name)} of ${own} is not connected`;
-      body.design.undriven.add(message, body.design.wordSpan(module.instances.position(instance)));
-    }
+    } else body.openInputs.push({ child, port, instance });
   }
-}
-
-function isRead({ reads }: Template, { offset, width }: TemplatePort): boolean {
-  for (let place = offset; place < offset + width; place++) if (reads[place] === 1) return true;
-  return false;
 }

@@ -15,6 +15,7 @@ const classOfType: Partial<Record<DeclaredType, number>> = {
   trior: NetClass.Or,
   tri0: NetClass.Pull0,
   tri1: NetClass.Pull1,
+  trireg: NetClass.Charge,
   supply0: NetClass.Supply0,
   supply1: NetClass.Supply1,
 };
@@ -35,6 +36,7 @@ interface Kind {
   readonly range: Range | undefined;
   readonly flags: number;
   readonly netClass: number;
+  readonly strength: DeclarationItem['strength'];
 }
 
 /** Declares the names of one item in a scope (IEEE 1364-2005, clauses 4 and 12.3). */
@@ -50,7 +52,9 @@ export function declare(body: ModuleBody, scope: BlockScope, item: DeclarationIt
     for (const declared of item.names) declareOther(body, scope, declared, type);
     return;
   }
-  const kind: Kind = { range, flags: flagsOf(item, range), netClass: netClassOf(body, item) };
+  const { strength } = item;
+  const netClass = netClassOf(body, item);
+  const kind: Kind = { range, flags: flagsOf(item, range), netClass, strength };
   for (const declared of item.names) declareNet(body, scope, declared, kind);
 }
 
@@ -117,7 +121,8 @@ function declareNet(body: ModuleBody, scope: BlockScope, declared: DeclaredName,
     const { start } = declared;
     symbols.add({ name, kind: SymbolKind.Signal, value, start, end, flags, netClass, msb, lsb });
   }
-  keepValue(body, scope, declared, (symbols.flags(symbols.find(name)) & Flag.Variable) !== 0);
+  const isVariable = (symbols.flags(symbols.find(name)) & Flag.Variable) !== 0;
+  keepValue(body, scope, declared, kind, isVariable);
 }
 
 /** Whether a declaration and an earlier one make up a port: one the direction, one the type. */
@@ -189,11 +194,13 @@ function keepValue(
   body: ModuleBody,
   scope: BlockScope,
   { name, value, start, end }: DeclaredName,
+  { strength }: Kind,
   isVariable: boolean,
 ): void {
   if (value === undefined) return;
   const target = { kind: 'name', path: [name], start, end } as const;
-  (isVariable ? body.variableValues : body.netValues).push({ scope, target, value });
+  if (isVariable) body.variableValues.push({ scope, target, value });
+  else body.netValues.push({ scope, target, value, strength });
 }
 
 // A declared name with a value or dimensions ends after them; its own end is nearer.

@@ -1,8 +1,11 @@
+import { type NetType, PartKind, Strength } from '../../../circuit/busParts.js';
 import { GateKind } from '../../../circuit/gates.js';
-import { type NetId, netId } from '../../../circuit/ids.js';
+import { NO_NET, netId } from '../../../circuit/ids.js';
 import type { ModuleBody } from './body.js';
 import type { Boundary } from './ports.js';
+import type { Recording } from './recording.js';
 import { Flag, NetClass, SymbolKind } from './symbols.js';
+import { Drive } from './template.js';
 import type { Usage } from './usage.js';
 
 /** The `NetClass` of each net that is not plain; joined nets under the oldest of them. */
@@ -24,43 +27,65 @@ export function netClassesOf(body: ModuleBody): NetClasses {
   return classes;
 }
 
-/** Drives the nets of type `supply0` and `supply1`. */
-export function driveSupplies(body: ModuleBody, classes: NetClasses): void {
+/** Drives the nets of type `supply0` and `supply1` (IEEE 1364-2005, clause 4.6.7). */
+export function driveSupplies({ builder }: ModuleBody, classes: NetClasses): void {
+  const { Supply: supply } = Strength;
   for (const [net, netClass] of classes) {
-    if (netClass === NetClass.Supply0) driveConstant(body, netId(net), GateKind.Zero);
-    else if (netClass === NetClass.Supply1) driveConstant(body, netId(net), GateKind.One);
+    if (netClass !== NetClass.Supply0 && netClass !== NetClass.Supply1) continue;
+    const { source, offset } = builder.netOrigin(net);
+    builder.at(source, offset);
+    const kind = netClass === NetClass.Supply0 ? GateKind.Zero : GateKind.One;
+    const traits = { kind: PartKind.Driver, zero: supply, one: supply };
+    builder.busPart(netId(net), builder.constant(kind), NO_NET, traits);
   }
 }
 
-/**
- * Gives nets without driver the value that they have by themselves: by a pull, by their type
- * (`tri0`, `tri1`), or, for a variable that nothing assigns, at power-up.
- */
-export function driveDefaults(
-  body: ModuleBody,
-  usage: Usage,
+/** Counts what the type of a net does to it. */
+export function countTypes(usage: Usage, classes: NetClasses): void {
+  for (const [net, netClass] of classes) {
+    if (isWired(netClass)) usage.wired.add(net);
+    else if (netClass === NetClass.Pull0 || netClass === NetClass.Pull1) {
+      usage.drive(netId(net), Drive.Weak);
+    }
+  }
+}
+
+/** Whether nets of a class may have several drivers that are on at once. */
+export const isWired = (netClass: number | undefined): boolean =>
+  netClass === NetClass.And || netClass === NetClass.Or;
+
+/** The classes that the circuit itself knows, for a template. */
+export function netTypesOf(
   classes: NetClasses,
+  find: (net: number) => number,
+): [net: number, type: NetType][] {
+  return [...classes].flatMap(([net, netClass]): [number, NetType][] =>
+    netClass === NetClass.Supply0 || netClass === NetClass.Supply1
+      ? []
+      : [[find(net), netClass as NetType]],
+  );
+}
+
+/** Gives a variable that nothing assigns its value at power-up. */
+export function driveDefaults(
+  { builder, initialValues }: ModuleBody,
+  usage: Usage,
   boundary: Boundary,
 ): void {
-  const outside = drivenOutside(body, boundary);
-  const drive = (net: NetId, kind: GateKind): void => {
-    const root = body.builder.find(net);
-    if (usage.drivers[root] !== 0 || outside.has(root)) return;
-    driveConstant(body, root, kind);
-    usage.drivers[root] = 1;
-  };
-  for (const [net, kind] of body.pulls) drive(net, kind);
-  for (const [net, netClass] of classes) {
-    if (netClass === NetClass.Pull0) drive(netId(net), GateKind.Zero);
-    else if (netClass === NetClass.Pull1) drive(netId(net), GateKind.One);
-  }
-  for (const [net, value] of body.initialValues) {
-    drive(net, value === 1 ? GateKind.One : GateKind.Zero);
+  if (initialValues.size === 0) return;
+  const outside = drivenOutside(builder, boundary);
+  for (const [net, value] of initialValues) {
+    const root = builder.find(net);
+    if (usage.driveOf(root) !== Drive.None || outside.has(root)) continue;
+    const { source, offset } = builder.netOrigin(root);
+    builder.at(source, offset);
+    builder.drive(root, value === 1 ? GateKind.One : GateKind.Zero, []);
+    usage.drive(root, Drive.Full);
   }
 }
 
 /** Nets of ports that take their value from the instance's connection. */
-function drivenOutside({ builder }: ModuleBody, { ports, nets }: Boundary): Set<number> {
+function drivenOutside(builder: Recording, { ports, nets }: Boundary): Set<number> {
   const outside = new Set<number>();
   for (const { direction, offset, width } of ports) {
     if (direction === Flag.Output) continue;
@@ -69,10 +94,4 @@ function drivenOutside({ builder }: ModuleBody, { ports, nets }: Boundary): Set<
     }
   }
   return outside;
-}
-
-function driveConstant({ builder }: ModuleBody, net: NetId, kind: GateKind): void {
-  const { source, offset } = builder.netOrigin(net);
-  builder.at(source, offset);
-  builder.drive(net, kind, []);
 }

@@ -3,9 +3,11 @@ import type { Span } from '../../../diagnostics/source.js';
 import type { Position, SourceMap } from '../../../diagnostics/sourceMap.js';
 import type { NameId, NameTable } from '../../names.js';
 import type { ModuleSyntax, PrimitiveSyntax, VerilogSyntax } from '../syntax.js';
+import { DrivenNets } from './drivenNets.js';
 import type { LibraryCell } from './libraryCell.js';
 import { LimitedReport, wordSpan } from './messages.js';
 import { NameIndex } from './nameIndex.js';
+import type { Outer } from './outer.js';
 import { noOverrides, type Overrides, overridesKey } from './overrides.js';
 import { type Shadowed, ShadowedModels } from './shadowedModels.js';
 import type { Template } from './template.js';
@@ -16,7 +18,12 @@ export type Definition = ModuleSyntax | PrimitiveSyntax | LibraryCell;
 
 /** How the templates of a design are made. */
 export interface TemplateMakers {
-  module(design: Design, module: ModuleSyntax, overrides: Overrides): Template;
+  module(
+    design: Design,
+    module: ModuleSyntax,
+    overrides: Overrides,
+    outer: Outer | undefined,
+  ): Template;
   primitive(design: Design, primitive: PrimitiveSyntax): Template;
 }
 
@@ -36,6 +43,7 @@ export class Design {
   readonly primitives: readonly PrimitiveSyntax[];
   readonly cells: readonly LibraryCell[];
   readonly templates: Template[] = [];
+  readonly driven = new DrivenNets(this.templates);
   readonly unknown: UnknownModules;
   readonly undriven: LimitedReport;
   readonly shadowed: ShadowedModels;
@@ -48,6 +56,7 @@ export class Design {
   readonly #twins = new Map<number, Shadowed>();
   readonly #specialised = new Map<string, number>();
   readonly #parameters = new Map<NameId, readonly NameId[]>();
+  readonly #atEnd: (() => void)[] = [];
   readonly #open: { readonly key: string; readonly module: ModuleSyntax }[] = [];
 
   constructor(
@@ -86,22 +95,31 @@ export class Design {
 
   /**
    * Index of the template of a module or primitive with the given parameter values, made when
-   * first asked for. `NO_TEMPLATE` where the module contains itself, which is reported at `place`.
-   * The name must be defined.
+   * first asked for, and anew where it has names that lead out of it: these depend on `outer`, the
+   * place of the instance. `NO_TEMPLATE` where the module contains itself, which is reported at
+   * `place`. The name must be defined.
    */
-  template(name: NameId, overrides: Overrides, place: Position): number {
+  template(name: NameId, overrides: Overrides, place: Position, outer?: Outer): number {
     const index = this.#definition.get(name);
     const key = overridesKey(overrides);
-    if (key === '') {
-      this.#plain[index] ||= this.#make(index, `${index}`, noOverrides, place) + 1;
-      return this.#plain[index]! - 1;
-    }
-    const fullKey = `${index} ${key}`;
-    const known = this.#specialised.get(fullKey);
-    if (known !== undefined) return known;
-    const made = this.#make(index, fullKey, overrides, place);
-    this.#specialised.set(fullKey, made);
+    const fullKey = key === '' ? `${index}` : `${index} ${key}`;
+    const known = key === '' ? this.#plain[index]! - 1 : this.#specialised.get(fullKey);
+    if (known !== undefined && known !== NO_TEMPLATE) return known;
+    const made = this.#make(index, fullKey, key === '' ? noOverrides : overrides, place, outer);
+    if (this.templates[made]?.outerNets !== undefined) return made;
+    if (key === '') this.#plain[index] = made + 1;
+    else this.#specialised.set(fullKey, made);
     return made;
+  }
+
+  /** Lets something be done once all modules of the design are compiled. */
+  atEnd(action: () => void): void {
+    this.#atEnd.push(action);
+  }
+
+  /** Does what was put off; to be called when all modules are compiled. */
+  finish(): void {
+    for (const action of this.#atEnd) action();
   }
 
   /** The parameters of a module that an instance may set, in the order of their declaration. */
@@ -127,7 +145,13 @@ export class Design {
     return wordSpan(source, start);
   }
 
-  #make(index: number, key: string, overrides: Overrides, place: Position): number {
+  #make(
+    index: number,
+    key: string,
+    overrides: Overrides,
+    place: Position,
+    outer: Outer | undefined,
+  ): number {
     const definition = this.#at(index);
     const twin = this.#twins.get(index);
     if (twin !== undefined) this.shadowed.add(twin);
@@ -139,7 +163,7 @@ export class Design {
     }
     if (this.#isEndless(definition, key, place)) return NO_TEMPLATE;
     this.#open.push({ key, module: definition });
-    const template = this.#makers.module(this, definition, overrides);
+    const template = this.#makers.module(this, definition, overrides, outer);
     this.#open.pop();
     return this.templates.push(template) - 1;
   }

@@ -1,9 +1,11 @@
 import { CircuitBuilder } from '../../../circuit/builder.js';
+import { type BusProblem, resolveBuses } from '../../../circuit/busResolution.js';
 import type { Circuit } from '../../../circuit/circuit.js';
 import type { Diagnostics } from '../../../diagnostics/diagnostics.js';
 import type { SourceMap } from '../../../diagnostics/sourceMap.js';
 import type { VerilogSyntax } from '../syntax.js';
 import { compileModule } from './compileModule.js';
+import { isWired } from './defaults.js';
 import { Design, NO_TEMPLATE } from './design.js';
 import type { LibraryCell } from './libraryCell.js';
 import { DistinctDiagnostics, wordSpan } from './messages.js';
@@ -53,6 +55,7 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
   design.shadowed.report();
   if (index === NO_TEMPLATE) return undefined;
   const top = design.templates[index]!;
+  design.finish();
   checkTopPorts(design, module, top);
   // What a missing module would drive is not known.
   if (design.unknown.isEmpty) {
@@ -67,6 +70,7 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
   const boundary = new Stamper(builder, design.templates, design.names).stamp(top);
   addTopPorts(builder, design, top, boundary);
   reportLateDrivers(design, builder);
+  if (!design.diagnostics.hasErrors) reportBuses(design, resolveBuses(builder));
   return design.diagnostics.hasErrors ? undefined : builder.finish(top.name);
 }
 
@@ -74,10 +78,30 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
 // can meet another driver as late as here.
 function reportLateDrivers(design: Design, builder: CircuitBuilder): void {
   for (const { net, sourceIndex, offset } of builder.extraDrivers) {
+    if (isWired(builder.netType(net))) continue;
     const span = wordSpan(design.sources.sources[sourceIndex]!, offset);
     const first = builder.originOf(net);
     const related = first && [{ message: 'also driven here', span: first }];
     const message = 'a second driver of a net that has one inside an instance; leave one of them';
     design.diagnostics.add('net-multiply-driven', message, span, related);
+  }
+}
+
+const busProblems: Readonly<Record<BusProblem['kind'], string>> = {
+  bothDriven:
+    'both sides of this switch have drivers, so that it may drive either one; ' +
+    'write a tri-state driver (bufif1, or assign with z) for each direction in its place',
+  ring:
+    'switches let the drivers of one another through in a ring; ' +
+    'write tri-state drivers (bufif1, or assign with z) in their place',
+  charge:
+    'a switch connects two nets that store their value, so that capacitances decide; ' +
+    'put a buffer in front of it',
+};
+
+function reportBuses({ diagnostics, sources }: Design, problems: readonly BusProblem[]): void {
+  for (const { kind, sourceIndex, offset } of problems) {
+    const span = wordSpan(sources.sources[sourceIndex]!, offset);
+    diagnostics.add('not-supported', busProblems[kind], span);
   }
 }

@@ -7,7 +7,7 @@ import {
   withoutAsynchronous,
 } from './asynchronous.js';
 import type { Recording } from './recording.js';
-import type { StatePins } from './sequentialPrimitive.js';
+import type { StatePins } from './statePins.js';
 import type { InputEdge, TableBehaviour } from './tableBehaviour.js';
 import { buildTruthTable, dependsOn, truthTable } from './truthTable.js';
 

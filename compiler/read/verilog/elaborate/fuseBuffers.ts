@@ -1,6 +1,6 @@
 import { GateKind } from '../../../circuit/gates.js';
 import { NO_NET, netId } from '../../../circuit/ids.js';
-import { DROPPED, type Recording } from './recording.js';
+import { BUS_PART, type Recording } from './recording.js';
 import type { Usage } from './usage.js';
 
 /**
@@ -22,6 +22,7 @@ export function fuseBuffers(recording: Recording, usage: Usage): Uint32Array | u
     const input = canonical[recording.faninAt(recording.faninStart(buffer))]!;
     const driver = driverOf[input]!;
     if (recording.isDeclared(input) || usage.drivers[input] !== 1 || driver === NO_NET) continue;
+    if (usage.isBus(netId(input))) continue;
     const kind = recording.driverKind(driver);
     if (kind <= GateKind.Unknown) {
       recording.makeConstant(buffer, kind as GateKind);
@@ -51,7 +52,7 @@ function buffersOf(recording: Recording): number[] {
 function driversByNet(recording: Recording, canonical: Uint32Array): Uint32Array {
   const driverOf = new Uint32Array(canonical.length).fill(NO_NET);
   for (let driver = 0; driver < recording.driverCount; driver++) {
-    if (recording.driverKind(driver) === DROPPED) continue;
+    if (recording.driverKind(driver) >= BUS_PART) continue;
     driverOf[canonical[recording.driverOutput(driver)]!] = driver;
   }
   return driverOf;

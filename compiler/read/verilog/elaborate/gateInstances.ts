@@ -1,107 +1,45 @@
+import { PartKind, Strength } from '../../../circuit/busParts.js';
 import { GateKind } from '../../../circuit/gates.js';
-import type { NetId } from '../../../circuit/ids.js';
+import { type NetId, NO_NET } from '../../../circuit/ids.js';
 import { builtinGates, POSITIONAL } from '../instances.js';
 import type { BlockScope } from './blockScope.js';
 import type { ModuleBody } from './body.js';
 import { evaluateRange } from './constants.js';
 import { fitted } from './fitting.js';
+import { type GateRow, type GateWord, gateRows, terminalsOf } from './gateRows.js';
+import type { Recording } from './recording.js';
+import { type Strengths, strengthsOf } from './strengths.js';
 import { connectionExpression, drivenNets, NOT_SIMPLE, readNets, simpleNet } from './terminals.js';
-
-type GateWord = (typeof builtinGates)[number];
-
-/** How a built-in gate becomes part of the circuit. */
-type GateRow =
-  /** One output and then any number of inputs (IEEE 1364-2005, clause 7.2). */
-  | { readonly form: 'inputs'; readonly kind: GateKind }
-  /** Any number of outputs and then one input (clause 7.3). */
-  | { readonly form: 'outputs'; readonly kind: GateKind }
-  /** Two terminals that are one net (clause 7.6). */
-  | { readonly form: 'join' }
-  /** One terminal that is this constant where nothing drives it (clause 7.8). */
-  | { readonly form: 'pull'; readonly kind: GateKind }
-  | { readonly form: 'refused'; readonly reason: string };
-
-const inputs = (kind: GateKind): GateRow => ({ form: 'inputs', kind });
-const outputs = (kind: GateKind): GateRow => ({ form: 'outputs', kind });
-const refused = (reason: string): GateRow => ({ form: 'refused', reason });
-const triState = refused('its output can be z; use a multiplexer, or and-or logic, in its place');
-const switchGate = refused('switches are below the level of gates; use gates in its place');
-
-const gateRows: Readonly<Record<GateWord, GateRow>> = {
-  and: inputs(GateKind.And),
-  nand: inputs(GateKind.Nand),
-  or: inputs(GateKind.Or),
-  nor: inputs(GateKind.Nor),
-  xor: inputs(GateKind.Xor),
-  xnor: inputs(GateKind.Xnor),
-  buf: outputs(GateKind.Buf),
-  not: outputs(GateKind.Not),
-  bufif0: triState,
-  bufif1: triState,
-  notif0: triState,
-  notif1: triState,
-  nmos: switchGate,
-  pmos: switchGate,
-  cmos: switchGate,
-  rnmos: switchGate,
-  rpmos: switchGate,
-  rcmos: switchGate,
-  tran: { form: 'join' },
-  rtran: { form: 'join' },
-  tranif0: switchGate,
-  tranif1: switchGate,
-  rtranif0: switchGate,
-  rtranif1: switchGate,
-  pullup: { form: 'pull', kind: GateKind.One },
-  pulldown: { form: 'pull', kind: GateKind.Zero },
-};
 
 /** Builds a built-in gate, or an array of them. */
 export function connectGate(body: ModuleBody, scope: BlockScope, instance: number): void {
   const table = body.module.instances;
   const word = builtinGates[-1 - table.module(instance)]!;
   const row = gateRows[word];
-  const position = table.position(instance);
-  const { start, end } = body.wordAt(position);
   const extras = table.extras(instance);
-  if (row.form === 'refused') {
-    body.report('not-supported', `${word} is not supported: ${row.reason}`, start, end);
-    return;
-  }
-  const { strength } = extras ?? {};
-  if (strength?.zero === 'highz' || strength?.one === 'highz') {
-    const message = `${word} with strength highz is not supported: its output can be z`;
-    body.report('not-supported', message, start, end);
-    return;
-  }
   const range = extras?.range && evaluateRange(extras.range, scope);
   if (extras?.range !== undefined && range === undefined) return;
-  const gate = { word, row, instance, count: range ? Math.abs(range.msb - range.lsb) + 1 : 1 };
+  const count = range ? Math.abs(range.msb - range.lsb) + 1 : 1;
+  const gate = { word, row, instance, count, strengths: strengthsOf(extras?.strength) };
   if (!checkTerminals(body, gate)) return;
   build(body, scope, gate);
 }
 
 interface Gate {
   readonly word: GateWord;
-  readonly row: Exclude<GateRow, { form: 'refused' }>;
+  readonly row: GateRow;
   readonly instance: number;
   /** Number of elements of an array of gates, else 1. */
   readonly count: number;
+  readonly strengths: Strengths | undefined;
 }
-
-const terminalCounts = {
-  inputs: { least: 2, most: Number.MAX_VALUE, text: 'an output and at least one input' },
-  outputs: { least: 2, most: Number.MAX_VALUE, text: 'at least one output and an input' },
-  join: { least: 2, most: 2, text: 'two terminals' },
-  pull: { least: 1, most: 1, text: 'one terminal' },
-} as const;
 
 function checkTerminals(body: ModuleBody, { word, row, instance }: Gate): boolean {
   const table = body.module.instances;
   const first = table.connectionStart(instance);
   const got = table.connectionStart(instance + 1) - first;
   const { start, end } = body.wordAt(table.position(instance));
-  const { least, most, text } = terminalCounts[row.form];
+  const { least, most, text } = terminalsOf[row.form];
   if (got < least || got > most) {
     body.report('gate-arity', `${word} takes ${text}, got ${got} connections`, start, end);
     return false;
@@ -117,7 +55,7 @@ function build(body: ModuleBody, scope: BlockScope, gate: Gate): void {
   const { row, instance, count } = gate;
   const first = module.instances.connectionStart(instance);
   const last = module.instances.connectionStart(instance + 1) - 1;
-  const outputCount = row.form === 'outputs' ? last - first : row.form === 'inputs' ? 1 : 2;
+  const outputCount = terminalsOf[row.form].driven(last - first + 1);
   const terminals: (readonly NetId[])[] = [];
   for (let connection = first; connection <= last; connection++) {
     const nets = terminalNets(body, scope, gate, connection, connection - first < outputCount);
@@ -127,10 +65,66 @@ function build(body: ModuleBody, scope: BlockScope, gate: Gate): void {
   body.buildAt(module.instances.position(instance));
   for (let element = 0; element < count; element++) {
     const nets = terminals.map((each) => (each.length === 1 ? each[0]! : each[element]!));
-    if (row.form === 'inputs') builder.drive(nets[0]!, row.kind, nets.slice(1));
-    else if (row.form === 'join') builder.join(nets[0]!, nets[1]!);
-    else if (row.form === 'pull') body.pulls.set(nets[0]!, row.kind);
-    else for (const output of nets.slice(0, -1)) builder.drive(output, row.kind, nets.slice(-1));
+    buildElement(builder, gate, nets);
+  }
+}
+
+const strong: Strengths = { zero: Strength.Strong, one: Strength.Strong };
+
+function buildElement(builder: Recording, { row, strengths }: Gate, nets: readonly NetId[]): void {
+  const [first, second, third, fourth] = nets as [NetId, NetId, NetId, NetId];
+  switch (row.form) {
+    case 'inputs':
+      driveGate(builder, first, row.kind, nets.slice(1), strengths);
+      break;
+    case 'outputs':
+      for (const output of nets.slice(0, -1)) {
+        driveGate(builder, output, row.kind, nets.slice(-1), strengths);
+      }
+      break;
+    case 'enable': {
+      const data = row.isInverted ? inverse(builder, second) : second;
+      const control = row.on === 1 ? third : inverse(builder, third);
+      builder.busPart(first, data, control, { kind: PartKind.Driver, ...(strengths ?? strong) });
+      break;
+    }
+    case 'switch':
+    case 'twoWay': {
+      const control = row.on === 1 ? third : inverse(builder, third);
+      const kind = row.form === 'switch' ? PartKind.Switch : PartKind.TwoWay;
+      builder.busPart(first, second, control, { kind, isResistive: row.isResistive });
+      break;
+    }
+    case 'pair': {
+      const control = builder.gate(GateKind.Or, [third, inverse(builder, fourth)]);
+      const { isResistive } = row;
+      builder.busPart(first, second, control, { kind: PartKind.Switch, isResistive });
+      break;
+    }
+    case 'join':
+      builder.join(first, second);
+      break;
+    case 'pull': {
+      const strength = strengths?.[row.kind === GateKind.One ? 'one' : 'zero'] ?? Strength.Pull;
+      const traits = { kind: PartKind.Driver, zero: strength, one: strength };
+      builder.busPart(first, builder.constant(row.kind), NO_NET, traits);
+    }
+  }
+}
+
+const inverse = (builder: Recording, net: NetId): NetId => builder.gate(GateKind.Not, [net]);
+
+function driveGate(
+  builder: Recording,
+  output: NetId,
+  kind: GateKind,
+  inputs: readonly NetId[],
+  strengths: Strengths | undefined,
+): void {
+  if (strengths === undefined) builder.drive(output, kind, inputs);
+  else {
+    const traits = { kind: PartKind.Driver, ...strengths };
+    builder.busPart(output, builder.gate(kind, inputs), NO_NET, traits);
   }
 }
 

@@ -1,6 +1,7 @@
 import type { NetId } from '../../../circuit/ids.js';
 import type { Binding } from '../scope.js';
 import type { Children } from './children.js';
+import { mapBinding } from './mapBinding.js';
 import type { Recording } from './recording.js';
 import type { Template } from './template.js';
 
@@ -12,19 +13,9 @@ export function imported(
   children: Children,
   recording: Recording,
 ): Binding | undefined {
-  const importNet = (inside: NetId): NetId => {
+  return mapBinding(binding, (inside) => {
     const net = (template.canonical?.[inside] ?? inside) as NetId;
     const place = template.boundary.indexOf(net);
     return children.import(child, net, place, () => recording.net());
-  };
-  switch (binding.kind) {
-    case 'signal':
-      return { ...binding, nets: binding.nets.map(importNet) };
-    case 'memory':
-      return { ...binding, words: binding.words.map((word) => word.map(importNet)) };
-    case 'parameter':
-      return binding;
-    case 'routine':
-      return undefined;
-  }
+  });
 }

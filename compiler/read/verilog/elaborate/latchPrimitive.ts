@@ -6,7 +6,7 @@ import {
   withoutAsynchronous,
 } from './asynchronous.js';
 import type { Recording } from './recording.js';
-import type { StatePins } from './sequentialPrimitive.js';
+import type { StatePins } from './statePins.js';
 import type { TableBehaviour } from './tableBehaviour.js';
 import { buildTruthTable, cofactor } from './truthTable.js';
 

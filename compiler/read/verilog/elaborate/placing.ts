@@ -34,13 +34,31 @@ export function nameInstances(body: ModuleBody): void {
  */
 export function placeInstances(body: ModuleBody, deep: readonly DeepOverride[]): void {
   const defparams = defparamsOf(body, deep);
+  const isPlaced = new Uint8Array(body.placed.length);
+  const place = (scope: BlockScope, instance: number, number: number): void => {
+    if (isPlaced[number] === 1) return;
+    isPlaced[number] = 1;
+    placeInstance(body, scope, instance, number, defparams.get(number));
+  };
+  body.placeEarly = (wanted) => {
+    forEachInstance(body, (scope, instance, number) => {
+      if (number === wanted) place(scope, instance, number);
+    });
+  };
+  forEachInstance(body, place);
+  body.placeEarly = undefined;
+}
+
+/** Calls `visit` for every instance of a module or primitive, and its number among these. */
+function forEachInstance(
+  body: ModuleBody,
+  visit: (scope: BlockScope, instance: number, number: number) => void,
+): void {
   const table = body.module.instances;
   let number = 0;
   for (const { scope, item } of body.instances) {
     for (let instance = item.first; instance < item.first + item.count; instance++) {
-      if (table.module(instance) < 0) continue;
-      placeInstance(body, scope, instance, number, defparams.get(number));
-      number++;
+      if (table.module(instance) >= 0) visit(scope, instance, number++);
     }
   }
 }
@@ -81,9 +99,10 @@ function placeInstance(
   const isPrimitive = design.isPrimitive(definition);
   // What looks like parameters of a primitive is its delay.
   const overrides = isPrimitive ? noOverrides : overridesOf(body, scope, instance, defparams);
-  const template = overrides && design.template(definition, overrides, position);
-  if (template === undefined || template === NO_TEMPLATE) return;
   const name = table.name(instance);
+  const outer = { host: body, scope, name };
+  const template = overrides && design.template(definition, overrides, position, outer);
+  if (template === undefined || template === NO_TEMPLATE) return;
   if (name === 0 && !isPrimitive) {
     const { start, end } = body.wordAt(position);
     const message = `the instance of module ${body.text(definition)} has no name; give it one`;
@@ -107,9 +126,15 @@ function addChild(
   { design, children, sources }: ModuleBody,
   { template, name, scope, position }: Placed,
 ): number {
-  const width = design.templates[template]!.boundary.length;
+  const { boundary, outerNets = [] } = design.templates[template]!;
   const { index: source, offset } = sources.locate(position);
-  return children.add(template, name, scope.index, { source, offset }, width);
+  const child = children.add(template, name, scope.index, { source, offset }, boundary.length);
+  for (const { net, outside } of outerNets) {
+    const place = boundary.indexOf(net);
+    if (place < 0) children.adopt(child, net, outside);
+    else children.setPort(child, place, outside);
+  }
+  return child;
 }
 
 function placeArray(body: ModuleBody, placed: Placed, number: number, syntax: RangeSyntax): void {

@@ -7,7 +7,7 @@ import { pruneUnused } from './pruning.js';
 import { Recording } from './recording.js';
 import { Flag } from './symbols.js';
 import type { Template, TemplatePort } from './template.js';
-import { usageOf } from './usage.js';
+import { usageOf, usesOf } from './usage.js';
 
 /** Compiles a user-defined primitive; its instances make no scope (IEEE 1364-2005, clause 8). */
 export function compilePrimitive(design: Design, primitive: PrimitiveSyntax): Template {
@@ -42,11 +42,9 @@ export function compilePrimitive(design: Design, primitive: PrimitiveSyntax): Te
     portOfName: new Map(),
     hasPortOrder: true,
     boundary,
-    drives: usage.drivers.slice(first, first + ports.length),
-    reads: usage.isRead.slice(first, first + ports.length),
+    ...usesOf(usage, boundary, (net) => canonical?.[net] ?? net),
     repeats: [],
     blocks: [],
     scope: undefined,
-    drivesNet: (net) => usage.drivers[net]! > 0,
   };
 }

@@ -1,7 +1,7 @@
 import { GateKind } from '../../../circuit/gates.js';
 import { NO_NET } from '../../../circuit/ids.js';
 import type { Children } from './children.js';
-import { DROPPED, type Recording } from './recording.js';
+import { BUS_PART, type Recording } from './recording.js';
 import { forEachFanin } from './usage.js';
 
 /**
@@ -28,7 +28,7 @@ export function pruneUnused(
     }
   };
   for (let driver = 0; driver < recording.driverCount; driver++) {
-    if (recording.driverKind(driver) === DROPPED) continue;
+    if (recording.driverKind(driver) >= BUS_PART) continue;
     driverOf[find(recording.driverOutput(driver))] = driver;
   }
   for (let net = 0; net < recording.netCount; net++) visit(net);
@@ -54,6 +54,9 @@ function readersOf(
   const readers = new Uint32Array(recording.netCount);
   for (let driver = 0; driver < recording.driverCount; driver++) {
     forEachFanin(recording, driver, (net) => readers[find(net)]!++);
+    // A bus counts as read: its parts are not taken out one by one.
+    if (recording.driverKind(driver) !== BUS_PART) continue;
+    readers[find(recording.driverOutput(driver))]!++;
   }
   children.forEachNet((net) => readers[find(net)]!++);
   for (const net of boundary) readers[net]!++;

@@ -1,4 +1,5 @@
 import type { LatchPins, RegisterPins } from '../../../circuit/builder.js';
+import { type PartTraits, packTraits } from '../../../circuit/busParts.js';
 import { Edge, Priority } from '../../../circuit/circuit.js';
 import { GateKind } from '../../../circuit/gates.js';
 import { GrowableUint8, GrowableUint32 } from '../../../circuit/growable.js';
@@ -21,6 +22,13 @@ export const Pin = { Control: 0, Data: 1, Set: 2, Reset: 3, Attributes: 4 } as c
 
 /** Kind of a driver that was taken out of a recording. */
 export const DROPPED = 255;
+
+/**
+ * Kind of a driver that is a part of a bus; only that of a dropped one is greater. Its fan-in list has these three numbers: `NO_NET` as
+ * `Control` for always, as `Traits` what `packTraits` makes.
+ */
+export const BUS_PART = 254;
+export const BusPin = { Data: 0, Control: 1, Traits: 2 } as const;
 
 const packAttributes = (edge: number, priority: number, initial: number): number =>
   edge | (priority << 1) | (initial << 3);
@@ -155,6 +163,14 @@ export class Recording implements GateSink {
     this.#pins(pins, pins.enable ?? NO_NET, Edge.Rising);
   }
 
+  /** Adds what drives a net part of the time or weakly; `control` is `NO_NET` for always. */
+  busPart(net: NetId, data: NetId, control: NetId, traits: PartTraits): void {
+    this.#begin(net, BUS_PART);
+    this.#fanin.push(data);
+    this.#fanin.push(control);
+    this.#fanin.push(packTraits(traits));
+  }
+
   // ---- What was recorded, for completing and stamping the module ----
 
   get driverCount(): number {
@@ -225,7 +241,7 @@ export class Recording implements GateSink {
     return { source: this.driverSource(driver), offset: this.driverOffset(driver) };
   }
 
-  #begin(net: NetId, kind: GateKind): void {
+  #begin(net: NetId, kind: number): void {
     const driver = this.#output.length;
     const root = this.find(net);
     if (this.#firstDriver.get(root) === 0) this.#firstDriver.set(root, driver + 1);

@@ -1,18 +1,9 @@
-import type { NetId } from '../../../circuit/ids.js';
 import { buildFlipFlop } from './flipFlopPrimitive.js';
 import { buildLatch } from './latchPrimitive.js';
 import type { SequentialTable } from './primitiveTable.js';
 import type { Recording } from './recording.js';
+import type { StatePins } from './statePins.js';
 import { TableBehaviour } from './tableBehaviour.js';
-
-/** The nets of a sequential primitive, and its value at power-up: 0, 1, or 2 for none. */
-export interface StatePins {
-  readonly output: NetId;
-  readonly inputs: readonly NetId[];
-  /** Names of the inputs, for messages. */
-  readonly names: readonly string[];
-  readonly initial: number;
-}
 
 /**
  * Builds a sequential primitive as a flip-flop or a latch, by what its table does for every

@@ -2,7 +2,7 @@ import type { CircuitBuilder } from '../../../circuit/builder.js';
 import { GateKind } from '../../../circuit/gates.js';
 import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
 import type { NameTable } from '../../names.js';
-import { DROPPED, type Origin, Pin, unpackAttributes } from './recording.js';
+import { BUS_PART, BusPin, DROPPED, type Origin, Pin, unpackAttributes } from './recording.js';
 import type { Template } from './template.js';
 
 /** A template that is being stamped: how far its children are, and where its nets went. */
@@ -110,6 +110,9 @@ export class Stamper {
       }
       this.#drive(template, nets, driver);
     }
+    for (const [net, type] of template.netTypes ?? []) {
+      builder.setNetType(netId(nets[net]!), type);
+    }
   }
 
   #drive({ recording }: Template, nets: Uint32Array, driver: number): void {
@@ -121,6 +124,11 @@ export class Stamper {
       this.#driveState(kind, output, this.#translated(recording, nets, start, Pin.Attributes), {
         ...unpackAttributes(recording.faninAt(start + Pin.Attributes)),
       });
+      return;
+    }
+    if (kind === BUS_PART) {
+      const [data, control] = this.#translated(recording, nets, start, BusPin.Traits);
+      this.#builder.busPart(output, data!, control!, recording.faninAt(start + BusPin.Traits));
       return;
     }
     const count = kind <= GateKind.Unknown ? 0 : recording.faninEnd(driver) - start;

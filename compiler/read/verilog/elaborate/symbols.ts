@@ -1,3 +1,4 @@
+import { NetType } from '../../../circuit/busParts.js';
 import { GrowableUint32 } from '../../../circuit/growable.js';
 import type { Position } from '../../../diagnostics/sourceMap.js';
 import type { NameId } from '../../names.js';
@@ -39,16 +40,8 @@ export const Flag = {
   Inout: 8 | 16,
 } as const;
 
-/** How the drivers of a net are resolved, and what it is without one. */
-export const NetClass = {
-  Plain: 0,
-  And: 1,
-  Or: 2,
-  Pull0: 3,
-  Pull1: 4,
-  Supply0: 5,
-  Supply1: 6,
-} as const;
+/** How the drivers of a net are resolved, and what it is without one: a `NetType` or a supply. */
+export const NetClass = { ...NetType, Supply0: 8, Supply1: 9 } as const;
 
 /** What `SymbolTable.add` takes. */
 export interface NewSymbol {

@@ -1,9 +1,22 @@
+import type { NetType } from '../../../circuit/busParts.js';
 import type { ModuleNames } from '../../../circuit/hierarchy.js';
 import type { NetId } from '../../../circuit/ids.js';
 import type { NameId } from '../../names.js';
 import type { BlockScope } from './blockScope.js';
 import type { Children } from './children.js';
+import type { OuterNet } from './outer.js';
 import type { Recording } from './recording.js';
+
+/** What a module, its instances included, does to a net. */
+export const Drive = {
+  None: 0,
+  /** Drives it at all times, and wants to be alone in that. */
+  Full: 1,
+  /** Drives it part of the time, or as one of several that a wired net allows. */
+  Shared: 2,
+  /** Gives it a value where nothing else does: a pull, or a switch of open direction. */
+  Weak: 3,
+} as const;
 
 /** A port of a module as its instances see it. */
 export interface TemplatePort {
@@ -59,7 +72,7 @@ export interface Template {
   readonly hasPortOrder: boolean;
   /** The nets of all ports, each least significant bit first. */
   readonly boundary: Uint32Array;
-  /** Per place of the boundary: whether the module drives that net. */
+  /** Per place of the boundary: the `Drive` of that net. */
   readonly drives: Uint8Array;
   /** Per place of the boundary: whether the module reads that net. */
   readonly reads: Uint8Array;
@@ -67,8 +80,14 @@ export interface Template {
   readonly repeats: readonly Repeat[];
   /** Empty for a primitive: its instances make no scope. */
   readonly blocks: readonly BlockNames[];
+  /** Nets that are one with nets of the module around; such a template is of one instance alone. */
+  readonly outerNets?: readonly OuterNet[];
   /** For hierarchical names; undefined for a primitive. */
   readonly scope: BlockScope | undefined;
-  /** Whether a net has a driver inside the module or its instances. */
-  drivesNet(net: NetId): boolean;
+  /** The nets whose type says more than `wire`; absent where there is none. */
+  readonly netTypes?: readonly (readonly [net: number, type: NetType])[];
+  /** The `Drive` of any net. */
+  driveOf(net: NetId): number;
+  /** Whether the module or its instances read a net. */
+  readsNet(net: NetId): boolean;
 }

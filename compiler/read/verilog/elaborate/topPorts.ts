@@ -4,7 +4,7 @@ import type { Span } from '../../../diagnostics/source.js';
 import type { ModuleSyntax } from '../syntax.js';
 import type { Design } from './design.js';
 import { Flag } from './symbols.js';
-import type { Template, TemplatePort } from './template.js';
+import { Drive, type Template, type TemplatePort } from './template.js';
 
 /** Reports what keeps a module from being the top: how it treats the nets of its ports. */
 export function checkTopPorts(design: Design, module: ModuleSyntax, top: Template): void {
@@ -15,22 +15,24 @@ export function checkTopPorts(design: Design, module: ModuleSyntax, top: Templat
     if (port.name === 0 && port.width > 0) {
       const message = `port ${index + 1} of the top module has no name; give it one: .name(…)`;
       design.diagnostics.add('not-supported', message, span);
-    } else if (port.direction === Flag.Output) {
-      const open = bitsOf(port).filter((place) => top.drives[place] === 0);
+    } else if (isOutput(top, port)) {
+      const open = bitsOf(port).filter((place) => top.drives[place] === Drive.None);
       if (open.length > 0) design.undriven.add(openOutput(name, port, open.length), span);
-    } else if (bitsOf(port).some((place) => top.drives[place] === 1)) {
-      const isInput = port.direction === Flag.Input;
-      const message = isInput
-        ? `input ${name} of the top module is also driven inside; leave one of the two drivers`
-        : `inout ${name} of the top module is driven inside, which is not supported; ` +
-          'split it into an input and an output';
-      design.diagnostics.add(isInput ? 'net-multiply-driven' : 'not-supported', message, span);
+      if (port.direction === Flag.Inout) {
+        const message =
+          `inout ${name} of the top module is driven inside, so that it becomes an output: ` +
+          'what drives it from outside has no place in a model; split it if it also is an input';
+        design.diagnostics.add('inout-as-output', message, span);
+      }
+    } else if (port.direction === Flag.Input && isDrivenInside(top, port)) {
+      const message = `input ${name} of the top module is also driven inside; leave one of the two drivers`;
+      design.diagnostics.add('net-multiply-driven', message, span);
     }
   }
   for (const { first, second } of top.repeats) checkRepeat(design, module, top, first, second);
 }
 
-/** Gives the circuit the ports of its top module; an inout that nothing drives is an input. */
+/** Gives the circuit the ports of its top module; an inout that is driven inside is an output. */
 export function addTopPorts(
   builder: CircuitBuilder,
   design: Design,
@@ -45,9 +47,21 @@ export function addTopPorts(
     const range = port.range ?? (port.width > 1 ? { msb: port.width - 1, lsb: 0 } : undefined);
     const span = positions[index];
     if (span !== undefined) builder.at(design.sources.sources.indexOf(span.source), span.start);
-    if (port.direction === Flag.Output) builder.output(name, nets, range);
+    if (isOutput(top, port)) builder.output(name, nets, range);
     else builder.input(name, nets, range);
   }
+}
+
+function isOutput(top: Template, port: TemplatePort): boolean {
+  if (port.direction !== Flag.Inout) return port.direction === Flag.Output;
+  return isDrivenInside(top, port);
+}
+
+// A pull is no driver: the outside overrides it.
+function isDrivenInside({ drives }: Template, port: TemplatePort): boolean {
+  return bitsOf(port).some(
+    (place) => drives[place] === Drive.Full || drives[place] === Drive.Shared,
+  );
 }
 
 function bitsOf({ offset, width }: TemplatePort): number[] {
@@ -78,7 +92,7 @@ function checkRepeat(
   const portAt = (place: number): number =>
     top.ports.findIndex(({ offset, width }) => offset <= place && place < offset + width);
   const ports = [portAt(first), portAt(second)];
-  if (ports.some((port) => top.ports[port]!.direction === Flag.Output)) return;
+  if (ports.some((port) => isOutput(top, top.ports[port]!))) return;
   const [a, b] = ports.map((port) => design.text(top.ports[port]!.name));
   const { start, end } = module.ports[ports[1]!] ?? module;
   const message = `the ports ${a} and ${b} of the top module are one net inside; remove one of them`;

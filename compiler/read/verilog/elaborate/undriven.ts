@@ -1,24 +1,59 @@
-import { netId } from '../../../circuit/ids.js';
+import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
 import { bitList } from './blockNames.js';
 import type { BlockScope } from './blockScope.js';
-import type { ModuleBody } from './body.js';
+import type { ModuleBody, OpenInput } from './body.js';
 import type { Boundary } from './ports.js';
 import { Flag, SymbolKind } from './symbols.js';
+import { Drive } from './template.js';
 import type { Usage } from './usage.js';
 
-/** Warns of signals that are read though nothing drives them. Ports are their instances' affair. */
-export function reportUndriven(body: ModuleBody, usage: Usage, boundary: Boundary): void {
+/**
+ * Warns of signals that are read though nothing drives them. Ports are their instances' affair.
+ *
+ * `isDrivenAbove` tells of nets that the modules around drive by hierarchical names, so that this
+ * waits until the whole design is compiled.
+ */
+export function reportUndriven(
+  body: ModuleBody,
+  usage: Usage,
+  boundary: Boundary,
+  isDrivenAbove: (net: NetId) => boolean,
+): void {
   const isPort = new Set<number>(boundary.nets.map((net) => body.builder.find(net)));
+  const isDriven = (net: NetId): boolean => {
+    const root = body.builder.find(net);
+    return usage.driveOf(root) !== Drive.None || isDrivenAbove(root);
+  };
   const isOpen = (net: number): boolean => {
     const root = body.builder.find(netId(net));
-    return usage.drivers[root] === 0 && usage.isRead[root] === 1 && !isPort.has(root);
+    return usage.isRead[root] === 1 && !isPort.has(root) && !isDriven(root);
   };
+  for (const open of body.openInputs) reportOpenInput(body, open, isDriven);
   for (const scope of body.blocks) {
     const { symbols } = scope;
     for (let symbol = 0; symbol < symbols.count; symbol++) {
       if (symbols.kind(symbol) === SymbolKind.Signal) reportSignal(body, scope, symbol, isOpen);
     }
   }
+}
+
+function reportOpenInput(
+  body: ModuleBody,
+  { child, port, instance }: OpenInput,
+  isDriven: (net: NetId) => boolean,
+): void {
+  const { children, design, module } = body;
+  const { reads, drives } = design.templates[children.template(child)]!;
+  const isOpen = (place: number): boolean => {
+    const net = children.port(child, place);
+    const hasValue = drives[place] !== Drive.None || (net !== NO_NET && isDriven(net));
+    return reads[place] === 1 && !hasValue;
+  };
+  const places = Array.from({ length: port.width }, (_, bit) => port.offset + bit);
+  if (!places.some(isOpen)) return;
+  const own = body.text(module.instances.name(instance));
+  const message = `input ${body.text(port.name)} of ${own} is not connected`;
+  design.undriven.add(message, design.wordSpan(module.instances.position(instance)));
 }
 
 function reportSignal(

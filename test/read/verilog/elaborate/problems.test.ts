@@ -221,10 +221,10 @@ describe('gates', () => {
     ['pullup (y, a);', 'gate-arity pullup@2'],
     ['tran (y);', 'gate-arity tran@2'],
     ['and (.y(y), .a(a), .b(a));', 'port-unknown and@2'],
-    ['bufif1 (y, a, a);', 'not-supported bufif1@2'],
-    ['nmos (y, a, a);', 'not-supported nmos@2'],
-    ['and (strong0, highz1) (y, a, a);', 'not-supported and@2'],
-    ['assign (highz0, strong1) y = a;', 'not-supported y = a@2'],
+    ['bufif1 (y, a);', 'gate-arity bufif1@2'],
+    ['nmos (y, a, a, a);', 'gate-arity nmos@2'],
+    ['cmos (y, a, a);', 'gate-arity cmos@2'],
+    ['tranif0 (y, a);', 'gate-arity tranif0@2'],
   ])('in %s are reported', (item, expected) => {
     const [first] = problemsOf(`module t (input a, output y);\n${item}\nendmodule`);
     expect(first).toBe(expected);
@@ -259,10 +259,13 @@ describe('nets', () => {
     ).toEqual(['net-multiply-driven a@1']);
   });
 
-  it('of inout ports may not be driven inside the top', () => {
-    expect(problemsOf('module t (input a,\n inout y); buf (y, a); endmodule')).toEqual([
-      'not-supported y@2',
-    ]);
+  it('of inout ports that are driven inside the top become outputs', () => {
+    const text = 'module t (input a,\n inout y); buf (y, a); endmodule';
+    expect(problemsOf(text)).toEqual(['inout-as-output y@2']);
+    expect(messageOf(text)).toContain('inout y of the top module is driven inside');
+    const { circuit } = reading(text);
+    expect(circuit!.inputs.map(({ name }) => name)).toEqual(['a']);
+    expect(circuit!.outputs.map(({ name }) => name)).toEqual(['y']);
   });
 
   it('that a hierarchical name drives in an instance may have no other driver', () => {

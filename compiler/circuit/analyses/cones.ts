@@ -1,6 +1,6 @@
-import type { Circuit } from './circuit.js';
-import { isGate } from './gates.js';
-import { NO_NET } from './ids.js';
+import type { Circuit } from '../circuit.js';
+import { isGate } from '../gates.js';
+import { NO_NET } from '../ids.js';
 
 /**
  * Marks nets with a 1, and all that they depend on through gates. What is marked already is taken

@@ -1,9 +1,9 @@
-import type { Circuit } from './circuit.js';
+import type { Circuit } from '../circuit.js';
+import { isGate } from '../gates.js';
+import { NO_NET } from '../ids.js';
+import { gateReaders } from '../readers.js';
 import type { ClockRoots } from './clockRoots.js';
-import { isGate } from './gates.js';
-import { NO_NET } from './ids.js';
 import { PinLists } from './pinLists.js';
-import { gateReaders } from './readers.js';
 import { NO_ROOTS } from './rootSets.js';
 
 /** Two registers of different clocks with a path from one to the other. */

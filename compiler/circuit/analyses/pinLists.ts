@@ -1,4 +1,4 @@
-import { NO_NET } from './ids.js';
+import { NO_NET } from '../ids.js';
 
 /** Which entries of a column of pins hang on each net: the registers clocked by it, say. */
 export class PinLists {

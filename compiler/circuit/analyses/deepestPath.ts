@@ -1,6 +1,6 @@
-import type { Circuit } from './circuit.js';
-import { isGate } from './gates.js';
-import { NO_NET } from './ids.js';
+import type { Circuit } from '../circuit.js';
+import { isGate } from '../gates.js';
+import { NO_NET } from '../ids.js';
 import { statePins } from './readCounts.js';
 
 /**

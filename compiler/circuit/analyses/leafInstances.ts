@@ -1,4 +1,4 @@
-import type { Hierarchy } from './hierarchy.js';
+import type { Hierarchy } from '../hierarchy.js';
 
 /**
  * How many instances there are of each module that contains no other, most frequent first: the

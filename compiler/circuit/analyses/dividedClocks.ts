@@ -1,8 +1,8 @@
-import type { Circuit } from './circuit.js';
+import type { Circuit } from '../circuit.js';
+import { NO_NET } from '../ids.js';
+import type { Readers } from '../readers.js';
 import { markCone } from './cones.js';
-import { NO_NET } from './ids.js';
 import { PinLists } from './pinLists.js';
-import type { Readers } from './readers.js';
 import { NO_ROOTS, type RootSets } from './rootSets.js';
 
 /**

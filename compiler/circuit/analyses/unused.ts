@@ -1,7 +1,7 @@
-import type { Circuit } from './circuit.js';
+import type { Circuit } from '../circuit.js';
+import { isGate } from '../gates.js';
+import { NO_NET } from '../ids.js';
 import { markCone } from './cones.js';
-import { isGate } from './gates.js';
-import { NO_NET } from './ids.js';
 import { PinLists } from './pinLists.js';
 import { statePins } from './readCounts.js';
 
@@ -19,6 +19,7 @@ export function unusedParts(circuit: Circuit): UnusedParts {
   const leadsOn = new Uint8Array(netCount);
   for (const { nets } of circuit.outputs) markCone(circuit, nets, leadsOn);
   for (const pins of statePins(registers, latches)) markCone(circuit, pins, leadsOn);
+  markCone(circuit, checkedNets(circuit), leadsOn);
   const gates: number[] = [];
   for (let net = 0; net < netCount; net++) {
     if (leadsOn[net] === 0 && isGate(kind[net]!)) gates.push(net);
@@ -28,6 +29,9 @@ export function unusedParts(circuit: Circuit): UnusedParts {
   const state = [...registers.output.filter(isUnseen), ...latches.output.filter(isUnseen)];
   return { gates: Uint32Array.from(gates), state: Uint32Array.from(state) };
 }
+
+// A run watches these, so that what they depend on matters.
+const checkedNets = ({ checks }: Circuit): number[] => checks.map(({ when }) => when);
 
 /** A 1 for each net that an output depends on, through gates, registers and latches. */
 function observedNets(circuit: Circuit): Uint8Array {
@@ -42,6 +46,7 @@ function observedNets(circuit: Circuit): Uint8Array {
     pending.push(net);
   };
   for (const { nets } of circuit.outputs) nets.forEach(visit);
+  checkedNets(circuit).forEach(visit);
   const visitPins = (table: Circuit['registers'] | Circuit['latches'], entry: number): void => {
     visit(table.data[entry]!);
     visit(table.set[entry]!);

@@ -1,4 +1,4 @@
-import type { Loops, SettlingSources } from './loops.js';
+import type { Loops, SettlingSources } from '../loops.js';
 
 /**
  * The shortest way from the first net of a loop back to itself, in the direction in which values

@@ -1,4 +1,4 @@
-import { type Hierarchy, nameAt, scopePath } from './hierarchy.js';
+import { type Hierarchy, nameAt, scopePath } from '../hierarchy.js';
 
 /** Two names that differ in nothing but the case of letters. */
 export interface CaseTwins {
@@ -10,7 +10,7 @@ export interface CaseTwins {
 
 /**
  * Signals of one module, and instances in one scope, whose names differ only in the case of
- * letters. Of a module with several instances the first is told.
+ * the letters A to Z. Of a module with several instances the first is told.
  */
 export function caseTwins(hierarchy: Hierarchy): CaseTwins[] {
   return [...signalTwins(hierarchy), ...scopeTwins(hierarchy)];
@@ -45,34 +45,44 @@ function scopeTwins(hierarchy: Hierarchy): CaseTwins[] {
     }));
 }
 
-const hasLarge = (name: string): boolean => /\p{Lu}/u.test(name);
-const hasSmall = (name: string): boolean => /\p{Ll}/u.test(name);
-
-/** Pairs of indices whose names, within one group, differ in case alone. */
+/** Pairs of indices whose names, within one group, differ in case alone; one pair a name. */
 function twinsAmong(
   count: number,
   nameOf: (index: number) => string,
   group?: Uint32Array,
 ): [number, number][] {
-  // Of two such names, one has a large letter and the other a small one: names of which a netlist
-  // has many mostly have only one sort, and then there is nothing to compare.
-  const large: number[] = [];
-  const small: number[] = [];
+  // Open addressing over indices: a netlist has millions of names, and few that are alike.
+  const mask = 2 ** Math.ceil(Math.log2(2 * count + 2)) - 1;
+  const slots = new Int32Array(mask + 1).fill(-1);
+  const pairs = new Map<number, [number, number]>();
   for (let i = 0; i < count; i++) {
     const name = nameOf(i);
-    if (hasLarge(name)) large.push(i);
-    if (hasSmall(name)) small.push(i);
-  }
-  const [few, many] = large.length < small.length ? [large, small] : [small, large];
-  const keyOf = (i: number): string => `${group?.[i] ?? ''} ${nameOf(i).toLowerCase()}`;
-  const known = new Map<string, number>();
-  for (const i of few) if (!known.has(keyOf(i))) known.set(keyOf(i), i);
-  const pairs = new Map<string, [number, number]>();
-  for (const i of known.size === 0 ? [] : many) {
-    const key = keyOf(i);
-    const other = known.get(key);
-    if (other === undefined || nameOf(other) === nameOf(i) || pairs.has(key)) continue;
-    pairs.set(key, other < i ? [other, i] : [i, other]);
+    const isAlike = (other: number): boolean =>
+      group?.[other] === group?.[i] && areAlike(nameOf(other), name);
+    let slot = foldedHash(name, group?.[i] ?? 0) & mask;
+    while (slots[slot]! >= 0 && !isAlike(slots[slot]!)) slot = (slot + 1) & mask;
+    const first = slots[slot]!;
+    if (first < 0) slots[slot] = i;
+    else if (nameOf(first) !== name && !pairs.has(first)) pairs.set(first, [first, i]);
   }
   return [...pairs.values()];
+}
+
+// FNV-1a (http://www.isthe.com/chongo/tech/comp/fnv/) over the name with small letters.
+function foldedHash(name: string, start: number): number {
+  let hash = 0x811c9dc5 ^ start;
+  for (let i = 0; i < name.length; i++) hash = Math.imul(hash ^ folded(name, i), 0x01000193);
+  return hash ^ (hash >>> 15);
+}
+
+function areAlike(a: string, b: string): boolean {
+  if (a.length !== b.length) return false;
+  for (let i = 0; i < a.length; i++) if (folded(a, i) !== folded(b, i)) return false;
+  return true;
+}
+
+/** A character, the letters A to Z made small. */
+function folded(name: string, i: number): number {
+  const code = name.charCodeAt(i);
+  return code >= 65 && code <= 90 ? code + 32 : code;
 }

@@ -1,5 +1,5 @@
-import type { Circuit } from './circuit.js';
-import { isGate } from './gates.js';
+import type { Circuit } from '../circuit.js';
+import { isGate } from '../gates.js';
 
 /**
  * How many gates have each level; entry 0 counts those without one, on or behind a combinational
@@ -44,4 +44,5 @@ function netsInLevelOrder(level: Uint32Array): Uint32Array {
   return order;
 }
 
-const highest = (level: Uint32Array): number => level.reduce((most, each) => Math.max(most, each), 0);
+const highest = (level: Uint32Array): number =>
+  level.reduce((most, each) => Math.max(most, each), 0);

@@ -1,5 +1,5 @@
-import type { Circuit } from './circuit.js';
-import { NO_NET } from './ids.js';
+import type { Circuit } from '../circuit.js';
+import { NO_NET } from '../ids.js';
 
 /** For each net, how many read it: inputs of gates, pins of registers and latches, output bits. */
 export function readCounts(circuit: Circuit): Uint32Array {

@@ -1,9 +1,9 @@
-import { Edge, type Circuit } from './circuit.js';
-import type { ClockPorts } from './clockPorts.js';
+import { type Circuit, Edge } from '../circuit.js';
+import type { ClockPorts } from '../clockPorts.js';
+import { GateKind, gateInfo, isGate } from '../gates.js';
+import { NO_NET } from '../ids.js';
+import { gateReaders, type Readers } from '../readers.js';
 import { followDividers } from './dividedClocks.js';
-import { GateKind, gateInfo, isGate } from './gates.js';
-import { NO_NET } from './ids.js';
-import { gateReaders, type Readers } from './readers.js';
 import { NO_ROOTS, RootSets } from './rootSets.js';
 
 /** How a clock port gets to the clock pin of a register or the enable of a latch. */

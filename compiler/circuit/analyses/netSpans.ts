@@ -1,5 +1,5 @@
-import type { Span } from '../diagnostics/source.js';
-import type { Circuit } from './circuit.js';
+import type { Span } from '../../diagnostics/source.js';
+import type { Circuit } from '../circuit.js';
 
 /** Where the driver of a net stands, or undefined for a circuit that comes from no text. */
 export function spanOfNet(circuit: Circuit, net: number): Span | undefined {

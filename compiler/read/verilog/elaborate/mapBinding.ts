@@ -1,0 +1,16 @@
+import type { NetId } from '../../../circuit/ids.js';
+import type { Binding } from '../scope.js';
+
+/** A binding with other nets; undefined for a routine, which reads nets of its own module. */
+export function mapBinding(binding: Binding, map: (net: NetId) => NetId): Binding | undefined {
+  switch (binding.kind) {
+    case 'signal':
+      return { ...binding, nets: binding.nets.map(map) };
+    case 'memory':
+      return { ...binding, words: binding.words.map((word) => word.map(map)) };
+    case 'parameter':
+      return binding;
+    case 'routine':
+      return undefined;
+  }
+}

@@ -1,0 +1,60 @@
+import type { NetId } from '../../../circuit/ids.js';
+import type { NameId } from '../../names.js';
+import type { Binding } from '../scope.js';
+import type { BlockScope, ScopeHost } from './blockScope.js';
+import { mapBinding } from './mapBinding.js';
+
+/** Where an instance stands whose module is being compiled. */
+export interface Outer {
+  readonly host: OuterHost;
+  readonly scope: BlockScope;
+  /** Name of the instance, without the index of an array; 0 where it has none. */
+  readonly name: NameId;
+}
+
+/** A module that is being compiled for one place in the hierarchy. */
+export interface OuterHost extends ScopeHost {
+  /** Undefined for the top. */
+  readonly outer: Outer | undefined;
+  /** Its own net that stands for a net of the module around it. */
+  ownNet(outside: NetId): NetId;
+}
+
+/** A net of a module that is one with a net of the module around it. */
+export interface OuterNet {
+  readonly net: NetId;
+  readonly outside: NetId;
+}
+
+/**
+ * The meaning of a path that begins above a module (IEEE 1364-2005, clause 12.6): at the name of
+ * an instance or module around it, or of a block or instance that is visible from there. Told in
+ * nets of the module; undefined where no level has it.
+ */
+export function bindingAbove(host: OuterHost, path: readonly NameId[]): Binding | undefined {
+  if (path.length < 2) return undefined;
+  const [first] = path;
+  let inner = host;
+  for (let outer = host.outer; outer !== undefined; outer = inner.outer) {
+    if (first === outer.name) {
+      const binding = inner.blocks[0]!.member(path, 1);
+      if (binding !== undefined) return lifted(host, inner, binding);
+    }
+    const binding =
+      outer.scope.owner(first!)?.member(path, 0) ??
+      (first === outer.host.moduleName ? outer.host.blocks[0]!.member(path, 1) : undefined);
+    if (binding !== undefined) return lifted(host, outer.host, binding);
+    inner = outer.host;
+  }
+  return undefined;
+}
+
+function lifted(host: OuterHost, owner: OuterHost, binding: Binding): Binding | undefined {
+  return host === owner ? binding : mapBinding(binding, (net) => ownNetOf(host, owner, net));
+}
+
+/** The net of a module that stands for a net of one somewhere around it. */
+function ownNetOf(host: OuterHost, owner: OuterHost, net: NetId): NetId {
+  if (host === owner) return net;
+  return host.ownNet(ownNetOf(host.outer!.host, owner, net));
+}
