@@ -66,30 +66,29 @@ function declarations(block: number, instances: number): string {
 
 const gateNet = (block: number, index: number): string => `n${block * instancesPerBlock + index}`;
 
-/** Writes block after block; what one leaves unread, the next one reads. */
+/** Writes block after block, each behind registers that hold what the one before has left unread. */
 class BlockWriter {
   /** Nets that nothing reads yet; their number stays the same. */
-  #unread = Array.from({ length: dataBits }, (_, i) => `d[${i}]`);
+  #unread: readonly string[] = Array.from({ length: dataBits }, (_, i) => `d[${i}]`);
   #random = 20260301;
 
-  /** The instances of a block: registers first, whose data the gates after them make. */
+  /** The instances of a block. */
   block(block: number, size: number): string {
     const registers = Math.min(registersPerBlock, size);
-    const readable = [...this.#unread];
-    for (let i = 0; i < registers; i++) readable.push(registerNet(block, i));
-    const unread = readable.slice();
+    const states = Array.from({ length: registers }, (_, i) => registerNet(block, i));
+    const readable = states.slice();
+    const unread = states.slice();
     const lines: string[] = [];
     let oldest = 0;
     for (let i = registers; i < size; i++) {
       const net = gateNet(block, i);
-      lines.push(this.#gate(i, net, () => unread[oldest++]!, readable));
+      lines.push(this.#gate(i, net, unread[oldest++]!, readable));
       readable.push(net);
       unread.push(net);
     }
-    for (let i = 0; i < registers; i++) {
-      lines.push(this.#register(block, i, unread[oldest++]!));
-    }
-    this.#unread = unread.slice(oldest);
+    const data = [...this.#unread, ...unread.slice(oldest)];
+    for (let i = 0; i < registers; i++) lines.push(this.#register(block, i, data[i]!));
+    this.#unread = data.slice(registers);
     return `${lines.join('\n')}\n`;
   }
 
@@ -99,13 +98,13 @@ class BlockWriter {
     return `${lines.join('\n')}\nendmodule\n`;
   }
 
-  /** Reads one net that nothing else has read, and any others. */
-  #gate(index: number, net: string, nextUnread: () => string, all: readonly string[]): string {
+  /** A gate that reads one net that nothing has read before, and any others. */
+  #gate(index: number, net: string, unread: string, all: readonly string[]): string {
     const word = this.#one(logicWords);
     const inputCount = word === 'not' || word === 'buf' ? 1 : 2;
     const cell = word.startsWith('hob') ? cellNamed(word) : undefined;
     const wanted = cell === undefined ? inputCount : cell.pins.length - 1;
-    const inputs = [nextUnread()];
+    const inputs = [unread];
     while (inputs.length < wanted) inputs.push(this.#one(all));
     if (cell === undefined) return `  ${word} (${net}, ${inputs.join(', ')});`;
     return instance(cell, `U${net.slice(1)}_${index % 10}`, { y: net }, inputs);

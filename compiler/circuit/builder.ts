@@ -29,12 +29,12 @@ const UNDRIVEN = 255;
 export class CircuitBuilder {
   readonly hierarchy = new HierarchyBuilder();
   readonly extraDrivers: ExtraDriver[] = [];
-  readonly #kind = new GrowableUint8(1024);
-  readonly #driverStart = new GrowableUint32(1024);
-  readonly #driverCount = new GrowableUint32(1024);
-  readonly #fanin = new GrowableUint32(1024);
-  readonly #originSource = new GrowableUint32(1024);
-  readonly #originOffset = new GrowableUint32(1024);
+  readonly #kind: GrowableUint8;
+  readonly #driverStart: GrowableUint32;
+  readonly #driverCount: GrowableUint32;
+  readonly #fanin: GrowableUint32;
+  readonly #originSource: GrowableUint32;
+  readonly #originOffset: GrowableUint32;
   readonly #inputs: Port[] = [];
   readonly #outputs: Port[] = [];
   readonly #registers = new PinTable();
@@ -46,6 +46,16 @@ export class CircuitBuilder {
   readonly busParts = new BusParts();
   #sourceIndex = 0;
   #offset = 0;
+
+  /** Room for `expectedNets` is made at once; more than that cost some copying. */
+  constructor(expectedNets = 1024) {
+    this.#kind = new GrowableUint8(expectedNets);
+    this.#driverStart = new GrowableUint32(expectedNets);
+    this.#driverCount = new GrowableUint32(expectedNets);
+    this.#fanin = new GrowableUint32(2 * expectedNets);
+    this.#originSource = new GrowableUint32(expectedNets);
+    this.#originOffset = new GrowableUint32(expectedNets);
+  }
 
   /** Registers a source; returns its index for `at`. */
   addSource(source: Source): number {
@@ -121,6 +131,11 @@ export class CircuitBuilder {
   /** Adds an output port. */
   output(name: string, nets: readonly NetId[], range?: { msb: number; lsb: number }): void {
     this.#outputs.push(port(name, nets, range));
+  }
+
+  /** Names of the ports so far. */
+  portNames(): string[] {
+    return [...this.#inputs, ...this.#outputs].map(({ name }) => name);
   }
 
   /** Adds a register that drives `pins.output`. Edge is rising unless given. */
@@ -239,7 +254,7 @@ export class CircuitBuilder {
       hierarchy,
       checks: this.#namedChecks(hierarchy, netCount),
       sources: this.#sources,
-      originSource: Uint16Array.from(this.#originSource.take()),
+      originSource: new Uint16Array(this.#originSource.take()),
       originOffset: this.#originOffset.take(),
     };
   }

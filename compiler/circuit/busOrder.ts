@@ -24,11 +24,7 @@ export function orderBuses(buses: Buses): BusOrder {
   }
   const order = sorted(buses);
   if (order.length === buses.size) return { order, ring: [] };
-  const isOrdered = new Set(order);
-  const ring = inRing
-    .filter((bus) => !isOrdered.has(bus))
-    .flatMap(({ parts }) => parts.filter((part) => isOpen(buses, isOrdered, part)));
-  return { order, ring };
+  return { order, ring: ringParts(buses, new Set(order)) };
 }
 
 /** The bus whose drivers a part lets through, if it is one. */
@@ -36,9 +32,19 @@ export function sourceOf(buses: Buses, { kind, data }: BusPart): Bus | undefined
   return kind === PartKind.Driver ? undefined : buses.get(data);
 }
 
-function isOpen(buses: Buses, ordered: ReadonlySet<Bus>, part: BusPart): boolean {
-  const source = sourceOf(buses, part);
-  return source !== undefined && !ordered.has(source);
+/** The parts between buses that have no order, without those that only lead out of a ring. */
+function ringParts(buses: Buses, ordered: ReadonlySet<Bus>): BusPart[] {
+  let open = [...buses.values()].filter((bus) => !ordered.has(bus));
+  for (;;) {
+    const sources = new Set(
+      open.flatMap(({ parts }) => parts.map((part) => sourceOf(buses, part))),
+    );
+    const inside = open.filter((bus) => sources.has(bus));
+    if (inside.length === open.length) break;
+    open = inside;
+  }
+  const members = new Set<Bus | undefined>(open);
+  return open.flatMap(({ parts }) => parts.filter((part) => members.has(sourceOf(buses, part))));
 }
 
 // Topological order after Kahn, "Topological sorting of large networks", CACM 5(11), 1962.

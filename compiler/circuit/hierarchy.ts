@@ -67,6 +67,13 @@ export class HierarchyBuilder {
     return scope;
   }
 
+  /** The dotted path of a scope below the top; empty for the top itself. */
+  path(scope: number): string {
+    const parts: string[] = [];
+    for (let s = scope; s !== 0; s = this.#parent.get(s)) parts.push(this.#names[s]!);
+    return parts.reverse().join('.');
+  }
+
   finish(): Hierarchy {
     return {
       modules: this.#modules,

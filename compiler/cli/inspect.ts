@@ -17,7 +17,7 @@ interface InspectOptions extends NetlistOptions {
 export function inspectCommand(): Command {
   return addNetlistOptions(new Command('inspect'))
     .description('Shows the structure of a netlist: ports, clocks, gates, registers, problems.')
-    .option('--json', 'print the same as JSON, with all names')
+    .option('--json', 'print the same as JSON')
     .option('--level-plot <file>', 'draw gates by level and depth between registers as SVG')
     .addHelpText(
       'after',

@@ -43,6 +43,10 @@ export const codeTable = {
   'module-recursive': error('A module contains itself.', 'Break the recursion.'),
   'top-ambiguous': error('Several modules are instantiated by none.', 'Choose one with --top.'),
   'top-unknown': error('No module has the name given to --top.', 'Name one of those listed.'),
+  'choice-unknown': error(
+    'A module that is chosen as a black box or as a replacement is not there.',
+    'Name one that is.',
+  ),
   'port-unknown': error('A connection names a port that the module lacks.', 'Mend the name.'),
   'port-count': error('More positional connections than ports.', 'Remove the surplus.'),
   'width-mismatch': warning(

@@ -1,40 +1,53 @@
 import { type Logic, LogicOp, TRUE, UPDATE_WIDTH } from '../logic/logic.js';
 import { PolarityEdges } from './polarityEdges.js';
 
-/** Most nodes that one trial may turn over; wide exclusive-or networks would cost more than they gain. */
+/** Most nodes that one move may turn over; wide exclusive-or networks cost more than they gain. */
 const CASCADE_LIMIT = 64;
-/** Trials for each circuit; large ones are not swept until nothing more is gained. */
-const TRIALS = 400_000;
-const SWEEPS = 16;
+/** Node turns spent on one circuit: some tenths of a second. */
+const BUDGET = 2_000_000;
+const MOST_SWEEPS = 400;
+/** Sweeps of plain descent, before and after the others. */
+const DESCENT = 12;
+/** At first a move that costs one inversion is kept in about half of the cases. */
+const HOTTEST = 1.2;
 
 /**
  * Chooses for each node whether its value or the inverse is kept, so that few inversions remain: an
  * and-node kept inverted is an or of its inverted operands (De Morgan).
  *
  * Exclusive-ors and multiplexers take the polarity that falls out of their operands; and-nodes and
- * state bits are free. A local search turns over one at a time, with all that follows from it, and
- * keeps what lowers the number of nodes that are needed inverted. Returns 1 per inverted node. With
- * `keepsStates` no state bit is inverted, since other graphs share them.
+ * state bits are free. A move turns over one of these with all that follows from it. Simulated
+ * annealing (S. Kirkpatrick, C. Gelatt, M. Vecchi, "Optimization by simulated annealing", Science
+ * 220, 1983) keeps moves that lower the number of nodes needed inverted, and at first some others.
+ * Returns 1 per inverted node. With `keepsStates` no state bit is inverted, since other graphs
+ * share them.
  */
 export function choosePolarity(logic: Logic, keepsStates = false): Uint8Array {
   const edges = new PolarityEdges(logic);
+  const moves = movesOf(logic, edges, keepsStates);
+  descend(edges, moves);
+  const descended = { cost: edges.cost, inverted: edges.inverted.slice() };
+  const turns = moves.reduce((sum, move) => sum + move.length, 1);
+  const sweeps = Math.min(MOST_SWEEPS, Math.floor(BUDGET / turns));
+  if (sweeps <= DESCENT) return descended.inverted;
+  anneal(edges, moves, sweeps);
+  descend(edges, moves);
+  return edges.cost < descended.cost ? edges.inverted : descended.inverted;
+}
+
+/** Nodes that turn over together. */
+type Move = readonly number[];
+
+function movesOf(logic: Logic, edges: PolarityEdges, keepsStates: boolean): Move[] {
   const fixed = keepsStates ? new Uint8Array(logic.states.length).fill(1) : gatedStates(logic);
-  const sweeps = Math.min(SWEEPS, Math.max(2, Math.floor(TRIALS / logic.nodeCount)));
-  for (let sweep = 0; sweep < sweeps; sweep++) {
-    let gained = false;
-    for (let node = 1; node < logic.nodeCount; node++) {
-      const op = logic.op[node]!;
-      if (op !== LogicOp.And && (op !== LogicOp.State || fixed[logic.a[node]!] === 1)) continue;
-      const turned = cascade(edges, node);
-      if (turned === undefined) continue;
-      const before = edges.cost;
-      for (const each of turned) edges.turn(each);
-      if (edges.cost < before) gained = true;
-      else for (const each of turned) edges.turn(each);
-    }
-    if (!gained) break;
+  const moves: Move[] = [];
+  for (let node = 1; node < logic.nodeCount; node++) {
+    const op = logic.op[node]!;
+    if (op !== LogicOp.And && (op !== LogicOp.State || fixed[logic.a[node]!] === 1)) continue;
+    const move = cascade(edges, node);
+    if (move !== undefined) moves.push(move);
   }
-  return edges.inverted;
+  return moves;
 }
 
 // A gate makes 0 of what is kept: it needs its state bits as they are.
@@ -46,8 +59,36 @@ function gatedStates(logic: Logic): Uint8Array {
   return gated;
 }
 
+function descend(edges: PolarityEdges, moves: readonly Move[]): void {
+  for (let sweep = 0, gained = true; gained && sweep < DESCENT; sweep++) {
+    gained = false;
+    for (const move of moves) if (attempt(edges, move, 0)) gained = true;
+  }
+}
+
+function anneal(edges: PolarityEdges, moves: readonly Move[], sweeps: number): void {
+  // Numerical Recipes' linear congruential generator: equal circuits give equal code.
+  let random = 1;
+  for (let sweep = 0; sweep < sweeps; sweep++) {
+    const temperature = HOTTEST * (1 - sweep / sweeps);
+    for (const move of moves) {
+      random = (Math.imul(random, 1664525) + 1013904223) >>> 0;
+      attempt(edges, move, -temperature * Math.log((random + 1) / 2 ** 32));
+    }
+  }
+}
+
+// Makes a move unless it costs more than `allowed`; tells whether it gained anything.
+function attempt(edges: PolarityEdges, move: Move, allowed: number): boolean {
+  const before = edges.cost;
+  for (const node of move) edges.turn(node);
+  const cost = edges.cost - before;
+  if (cost >= 0 && (cost > allowed || allowed === 0)) for (const node of move) edges.turn(node);
+  return cost < 0;
+}
+
 // The node and every node whose polarity follows from it, each once; undefined if too many.
-function cascade(edges: PolarityEdges, node: number): number[] | undefined {
+function cascade(edges: PolarityEdges, node: number): Move | undefined {
   const turned = [node];
   if (edges.followersOf(node).length === 0) return turned;
   const parity = new Map<number, number>();

@@ -8,6 +8,16 @@ export const EMPTY_HASH = 0x811c9dc5 | 0;
 // differ in it, such as n10 … n19, have neighbouring slots and share a line of the cache.
 const PRIME = 0x01000193;
 
+// How many bytes of names are made a string at once where names are asked for in their order, and
+// how far apart two names may stand for that.
+const WINDOW = 4096;
+const NEAR = 256;
+
+// Names asked for again and again are found among so many.
+const CACHED = 512;
+
+const decoder = new TextDecoder();
+
 /** The hash of some bytes and one more. */
 export function hashStep(hash: number, byte: number): number {
   return Math.imul(hash, PRIME) ^ byte;
@@ -24,7 +34,12 @@ export class NameTable {
   // Pairs of an id (-1: none) and its name's hash.
   #slots: Int32Array;
   #count = 0;
-  readonly #strings: (string | undefined)[] = [];
+  /** The names of a stretch of `#bytes`; it has as many characters as bytes. */
+  #window = '';
+  #windowStart = 0;
+  #lastStart = 0;
+  readonly #cachedIds = new Int32Array(CACHED).fill(-1);
+  readonly #cached: string[] = new Array<string>(CACHED).fill('');
 
   /** Room for `expected` names is made at once; more than that cost some copying. */
   constructor(expected = 1000) {
@@ -70,12 +85,35 @@ export class NameTable {
 
   /** The name behind an id. */
   text(id: NameId): string {
-    const known = this.#strings[id];
-    if (known !== undefined) return known;
-    const bytes = this.#bytes.subarray(this.#starts[id]!, this.#starts[id + 1]!);
-    const text = new TextDecoder().decode(bytes);
-    this.#strings[id] = text;
+    const start = this.#starts[id]!;
+    const end = this.#starts[id + 1]!;
+    const at = start - this.#windowStart;
+    if (at >= 0 && at + end - start <= this.#window.length) {
+      return this.#window.slice(at, at + end - start);
+    }
+    const place = id % CACHED;
+    if (this.#cachedIds[place] === id) return this.#cached[place]!;
+    const text = this.#decoded(start, end);
+    this.#cachedIds[place] = id;
+    this.#cached[place] = text;
     return text;
+  }
+
+  #decoded(start: number, end: number): string {
+    const bytes = this.#bytes;
+    const distance = start - this.#lastStart;
+    this.#lastStart = start;
+    if (distance > 0 && distance < NEAR) {
+      const last = Math.min(start + WINDOW, this.#starts[this.#count]!);
+      const window = decoder.decode(bytes.subarray(start, last));
+      // With characters beyond ASCII, places in the string are not places in the bytes.
+      if (window.length === last - start && end <= last) {
+        this.#window = window;
+        this.#windowStart = start;
+        return window.slice(0, end - start);
+      }
+    }
+    return decoder.decode(bytes.subarray(start, end));
   }
 
   #equals(id: NameId, bytes: Uint8Array, start: number, end: number): boolean {

@@ -13,6 +13,17 @@ import type { PreprocessOptions } from './verilog/preprocess.js';
 export interface NetlistReadOptions extends PreprocessOptions {
   /** Name of the top module; chosen by itself where only one can be meant. */
   readonly top?: string;
+  /**
+   * Names of modules of which the inside is left out: the outputs of an instance `u1` become
+   * inputs of the circuit named `u1.q`, its inputs outputs named `u1.d`. No file need define such
+   * a module where all its connections are named.
+   */
+  readonly blackBoxes?: readonly string[];
+  /**
+   * By the name of a module the Verilog file that its definition is taken from, whatever other
+   * files define under that name. The other modules of the file are added to the design.
+   */
+  readonly replacements?: ReadonlyMap<string, Source>;
 }
 
 /** The form of a netlist file by the ending of its name. */
@@ -39,11 +50,20 @@ export function readNetlist(
   if (first === undefined) throw new RangeError('expected at least one netlist, got none');
   const forms = sources.map((source) => formOf(source, diagnostics));
   if (forms.includes(undefined)) return undefined;
-  if (!forms.includes('bench')) return readVerilog(sources, options, diagnostics);
+  if (!forms.includes('bench')) {
+    if (!areVerilog(options.replacements, diagnostics)) return undefined;
+    return readVerilog(sources, options, diagnostics);
+  }
   if (sources.length > 1) {
     const bench = sources[forms.indexOf('bench')]!;
     const message = `${bench.path} is a whole circuit in the ISCAS text form; give it alone`;
     reportFile(bench, message, diagnostics);
+    return undefined;
+  }
+  const [name] = [...(options.blackBoxes ?? []), ...(options.replacements?.keys() ?? [])];
+  if (name !== undefined) {
+    const message = `the ISCAS text form has no modules, and so no ${name} to leave out or replace`;
+    diagnostics.add('choice-unknown', message, { source: first, start: 0, end: 0 });
     return undefined;
   }
   const circuit = readBench(first, diagnostics);
@@ -63,17 +83,46 @@ function readVerilog(
   const sourceMap = new SourceMap();
   const errors = errorsIn(diagnostics);
   const isLibrary = (source: Source): boolean => formOf(source, diagnostics) === 'liberty';
-  const netlists = sources.filter((source) => !isLibrary(source));
-  const syntax = parseVerilog(netlists, options, sourceMap, diagnostics);
+  const replacements = onePerPath(options.replacements ?? new Map());
+  const replacing = new Map([...replacements.values()].map((source) => [source.path, source]));
+  const netlists = sources.filter((source) => !isLibrary(source) && !replacing.has(source.path));
+  const verilog = [...netlists, ...replacing.values()];
+  const syntax = parseVerilog(verilog, options, sourceMap, diagnostics);
   const libraries = sources
     .filter(isLibrary)
     .map((source) => readLiberty(source, options, sourceMap, diagnostics));
   // The tree of a text with errors has gaps; what they would lead to says nothing of the text.
   if (errorsIn(diagnostics) > errors) return undefined;
-  const { top } = options;
+  const { top, blackBoxes = [] } = options;
   const cells = libertyCells(libraries, syntax.names, sources, sourceMap);
-  const elaborateOptions = { cells, ...(top !== undefined && { top }) };
+  const elaborateOptions = {
+    ...{ cells, blackBoxes, replacements },
+    ...(top !== undefined && { top }),
+  };
   return elaborate(syntax, elaborateOptions, sourceMap, diagnostics);
+}
+
+function areVerilog(
+  replacements: ReadonlyMap<string, Source> | undefined,
+  diagnostics: Diagnostics,
+): boolean {
+  for (const [name, source] of replacements ?? []) {
+    const form = formOf(source, diagnostics);
+    if (form === 'verilog') continue;
+    const message = `${source.path} is no Verilog file, which the replacement of ${name} must be`;
+    if (form !== undefined) reportFile(source, message, diagnostics);
+    return false;
+  }
+  return true;
+}
+
+/** The replacements with one source for each file: it is read once, whatever it replaces. */
+function onePerPath(replacements: ReadonlyMap<string, Source>): Map<string, Source> {
+  const known = new Map<string, Source>();
+  for (const source of replacements.values()) {
+    if (!known.has(source.path)) known.set(source.path, source);
+  }
+  return new Map([...replacements].map(([name, { path }]) => [name, known.get(path)!]));
 }
 
 function errorsIn({ list }: Diagnostics): number {

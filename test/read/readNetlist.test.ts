@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { gateInfo, isGate } from '../../compiler/circuit/gates.js';
 import { Diagnostics } from '../../compiler/diagnostics/diagnostics.js';
 import { Source } from '../../compiler/diagnostics/source.js';
 import { type NetlistReadOptions, readNetlist } from '../../compiler/read/readNetlist.js';
@@ -56,9 +57,10 @@ describe('readNetlist', () => {
   });
 
   it('takes cells from a Liberty library', () => {
+    const named = 'module t (input a, output y); INV u (.a(a), .y(y)); endmodule';
     const cells =
       'library (t) { cell (INV) { pin (a) { } pin (y) { direction : output; function : "!a"; } } }';
-    const { circuit, problems } = read({ 't.v': top, 'cells.lib': cells });
+    const { circuit, problems } = read({ 't.v': named, 'cells.lib': cells });
     expect(problems).toEqual([]);
     expect(circuit!.sources.map(({ path }) => path)).toEqual(['t.v', 'cells.lib']);
     expect(read({ 't.v': top, 'cells.lib': '' }).problems).toEqual(['syntax-error cells.lib']);
@@ -71,5 +73,91 @@ describe('readNetlist', () => {
 
   it('throws without any source', () => {
     expect(() => read({})).toThrow(RangeError);
+  });
+});
+
+describe('replacements', () => {
+  const design = `module t (input a, output y); cell_a u1 (a, n); cell_b u2 (n, y); endmodule
+    module cell_a (input a, output y); old u (a, y); endmodule
+    module old (input a, output y); cell_c u (a, y); endmodule
+    module cell_b (input a, output y); buf (y, a); endmodule`;
+  const models = `\`include "helper.vh"
+    module cell_a (input a, output y); helper u (a, y); endmodule`;
+  const helper = 'module helper (input a, output y); not (y, a); endmodule';
+  const readInclude = (path: string) => new Source(path, helper);
+  const replaced = (
+    files: Readonly<Record<string, string>>,
+    by: Record<string, [string, string]>,
+  ) =>
+    read(files, {
+      readInclude,
+      replacements: new Map(
+        Object.entries(by).map(([name, [path, text]]) => [name, new Source(path, text)]),
+      ),
+    });
+  const gates = ({ circuit }: ReturnType<typeof read>) =>
+    Array.from(circuit!.kind)
+      .filter((kind) => isGate(kind))
+      .map((kind) => gateInfo(kind).name);
+
+  it('take a module from the file given, and add what else is there', () => {
+    const found = replaced({ 't.v': design }, { cell_a: ['new.v', models] });
+    expect(found.problems).toEqual([]);
+    expect(found.circuit!.name).toBe('t');
+    expect(gates(found)).toEqual(['not', 'buf']);
+  });
+
+  it('may take several modules from one file', () => {
+    const both = `${models} module cell_b (input a, output y); and (y, a, a); endmodule`;
+    const found = replaced({ 't.v': design }, { cell_a: ['n.v', both], cell_b: ['n.v', both] });
+    expect(found.problems).toEqual([]);
+    expect(gates(found)).toEqual(['not', 'and']);
+  });
+
+  it('may come from a file that is named as a netlist too', () => {
+    const found = replaced({ 'new.v': models, 't.v': design }, { cell_a: ['new.v', models] });
+    expect(found.problems).toEqual([]);
+    expect(gates(found)).toEqual(['not', 'buf']);
+  });
+
+  it('may be of modules that no other file defines', () => {
+    const found = replaced({ 't.v': top }, { INV: ['lib.v', library] });
+    expect(found.problems).toEqual([]);
+    expect(gates(found)).toEqual(['not']);
+  });
+
+  it('go before the cells of a library', () => {
+    const cells =
+      'library (l) { cell (INV) { pin (a) { direction : input; } pin (y) { direction : output; function : "a"; } } }';
+    const found = replaced(
+      { 't.v': 'module t (input a, output y); INV u (.a(a), .y(y)); endmodule', 'c.lib': cells },
+      { INV: ['lib.v', library] },
+    );
+    expect(found.problems).toEqual([]);
+    expect(gates(found)).toEqual(['not']);
+  });
+
+  it('are reported where the file has no such module', () => {
+    const found = replaced({ 't.v': top, 'l.v': library }, { INV: ['new.v', helper] });
+    expect(found.problems).toEqual(['choice-unknown new.v']);
+    expect(found.message).toContain('new.v defines no module INV');
+    expect(found.message).toContain('it defines helper');
+  });
+
+  it('are Verilog', () => {
+    const found = replaced({ 't.v': top }, { INV: ['c.bench', bench] });
+    expect(found.problems).toEqual(['file-kind-unknown c.bench']);
+    expect(replaced({ 't.v': top }, { INV: ['c.txt', bench] }).problems).toEqual([
+      'file-kind-unknown c.txt',
+    ]);
+  });
+
+  it('and black boxes are not of the ISCAS text form', () => {
+    expect(replaced({ 'c.bench': bench }, { y: ['n.v', library] }).problems).toEqual([
+      'choice-unknown c.bench',
+    ]);
+    expect(read({ 'c.bench': bench }, { blackBoxes: ['y'] }).problems).toEqual([
+      'choice-unknown c.bench',
+    ]);
   });
 });

@@ -50,7 +50,7 @@ const model = (): Model => {
 
 describe('the arbiter', () => {
   it('grants in turn, in all styles and sizes', async () => {
-    const rows = randomInputs(everyArbiter, 4, 1500, ({ request }, chance, cycle) => ({
+    const rows = randomInputs(everyArbiter, 4, 800, ({ request }, chance, cycle) => ({
       rst_n: cycle === 0 || chance(200) ? 0 : 1,
       request: chance(3) ? request! : request! & 0b10110,
     }));

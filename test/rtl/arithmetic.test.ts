@@ -40,7 +40,7 @@ describe('the multiplier and accumulator', () => {
       cornerPairs.map(([a, b]): Values => ({ ...quiet, ...sign, a, b })),
     );
     // Large products of one sign for a while, so that the sum meets its ends.
-    const random = randomInputs(design, 12, 3000, (row, chance, cycle) => ({
+    const random = randomInputs(design, 12, 1200, (row, chance, cycle) => ({
       rst_n: cycle === 0 || chance(500) ? 0 : 1,
       clear: chance(200) ? 1 : 0,
       subtract: (cycle >> 6) & 1,
@@ -78,7 +78,7 @@ describe('shifters and comparators', () => {
     const directed = cornerPairs.map(
       ([x, y], i): Values => ({ x, y, by: i & 7, kind: (i >> 3) & 3 }),
     );
-    const random = randomInputs(design, 13, 2000, ({ x }, chance) => (chance(20) ? { y: x! } : {}));
+    const random = randomInputs(design, 13, 1000, ({ x }, chance) => (chance(20) ? { y: x! } : {}));
     await expectModel(design, shifters, [...directed, ...random]);
   });
 });

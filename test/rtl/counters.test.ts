@@ -53,7 +53,7 @@ const counters = (): Model => {
 
 describe('counters, feedback registers and the rotator', () => {
   it('step as their models do', async () => {
-    const rows = randomInputs(design, 14, 2500, (_, chance, cycle) => ({
+    const rows = randomInputs(design, 14, 1000, (_, chance, cycle) => ({
       rst: cycle === 0 || chance(200) ? 1 : 0,
       load: chance(50) ? 1 : 0,
       down: (cycle >> 5) & 1,

@@ -40,7 +40,7 @@ const codings = ['crossing_binary', 'crossing_onehot', 'crossing_table'];
 describe('the pedestrian crossing', () => {
   it.each(codings)('does as its table of phases says: %s', async (coding) => {
     const design = rtlDesign([`${coding}.v`]);
-    const rows = randomInputs(design, 1, 3000, (_, chance, cycle) => ({
+    const rows = randomInputs(design, 1, 2000, (_, chance, cycle) => ({
       rst_n: cycle === 0 || chance(300) ? 0 : 1,
       tick: chance(2) ? 1 : 0,
       button: chance(9) ? 1 : 0,

@@ -38,7 +38,7 @@ const datapath = (): Model => {
 describe('a datapath of parameters, generate constructs and arrays', () => {
   it(`has ${LANES} lanes that do as their parameters say`, async () => {
     const design = rtlDesign(['hierarchy.v']);
-    const rows = randomInputs(design, 16, 1500, (_, chance, cycle) => ({
+    const rows = randomInputs(design, 16, 800, (_, chance, cycle) => ({
       rst_n: cycle === 0 || chance(100) ? 0 : 1,
     }));
     await expectModel(design, datapath, rows);

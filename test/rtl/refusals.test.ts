@@ -158,7 +158,7 @@ const refusals: Readonly<Record<string, readonly [code: string, way: string, tex
   ],
   'a loop whose index cannot reach its end': [
     'loop-unbounded',
-    'give it smaller bounds',
+    'declare it wider, or as an integer',
     `module m (input [7:0] d, output reg [7:0] q);
        reg [2:0] i;
        always @*

@@ -1,12 +1,5 @@
-import { describe, expect, it } from 'vitest';
-import {
-  expectModel,
-  type Model,
-  onEveryEngine,
-  randomInputs,
-  rtlDesign,
-  type Values,
-} from './circuits.js';
+import { describe, it } from 'vitest';
+import { expectModel, type Model, randomInputs, rtlDesign, type Values } from './circuits.js';
 
 const design = rtlDesign(['storage.v']);
 
@@ -63,14 +56,14 @@ const storage = (): Model => {
       if (s.half) s.divided = (s.divided + sel!) & 3;
     }
     s.hold_low = hold!;
+    // The first one's clock is inverted, so that it toggles at the rise of this one.
+    if (!rst) s.ripple = (s.ripple + 1) & 7;
   };
-  const fall = ({ rst, enable, d }: Values): void => {
+  const fall = ({ enable, d }: Values): void => {
     s.falling = (s.falling & 12) | (s.plain & 3);
     if (!s.hold_low) s.by_pulse = d! ^ s.by_gate;
-    // The first toggles at the rise of the clock, which is the fall of its inverse.
     s.master = d!;
     s.open = enable!;
-    void rst;
   };
   return (row) => {
     settle(row);
@@ -92,7 +85,6 @@ const storage = (): Model => {
       nor_q: s.nor,
     };
     rise(row);
-    if (!row.rst) s.ripple = (s.ripple + 1) & 7;
     fall(row);
     return outputs;
   };
@@ -100,7 +92,7 @@ const storage = (): Model => {
 
 describe('forms of storage', () => {
   it('keep and pass values as their models do', async () => {
-    const rows = randomInputs(design, 15, 3000, (_, chance, cycle) => ({
+    const rows = randomInputs(design, 15, 1500, (_, chance, cycle) => ({
       rst: cycle === 0 || chance(30) ? 1 : 0,
       set_n: chance(30) ? 0 : 1,
     }));

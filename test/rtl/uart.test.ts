@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import { RandomBits } from '../../runtime/random.js';
-import { onEveryEngine, rtlDesign, type Values } from './circuits.js';
+import { anyOf, onEveryEngine, rtlDesign, type Values } from './circuits.js';
 
 // Start-stop frames "8N1" (common practice): the line rests at 1; a start bit 0, eight data bits
 // from the least significant on, one stop bit 1, all equally long.
@@ -13,26 +13,26 @@ const frameOf = (byte: number): number[] => [
 const random = new RandomBits(8);
 const bytes = [0x00, 0xff, 0x55, 0xc3, ...Array.from({ length: 20 }, () => random.next() & 255)];
 
-const withDivider = (module: string, ports: string, divider: number) =>
+const transmitter = (divider: number) =>
   rtlDesign(
     ['uart.v'],
-    `module any (${ports.replaceAll(/\b(\w+):(\d+)/g, '[$2:0] $1')});
-       ${module} #(${divider}) it (${[...ports.matchAll(/(\w+)(?::\d+)?(?=,|$)/g)].map(([, name]) => `.${name}(${name})`).join(', ')});
-     endmodule`,
+    anyOf(
+      'uart_tx',
+      { DIVIDER: divider },
+      'input clk, rst_n, valid, input [7:0] data, output ready, txd',
+    ),
     'any',
   );
 
-const transmitter = (divider: number) =>
-  withDivider(
-    'uart_tx',
-    'input clk, input rst_n, input data:7, input valid, output ready, output txd',
-    divider,
-  );
 const receiver = (divider: number) =>
-  withDivider(
-    'uart_rx',
-    'input clk, input rst_n, input rxd, output data:7, output strobe, output frame_error',
-    divider,
+  rtlDesign(
+    ['uart.v'],
+    anyOf(
+      'uart_rx',
+      { DIVIDER: divider },
+      'input clk, rst_n, rxd, output [7:0] data, output strobe, frame_error',
+    ),
+    'any',
   );
 
 describe('the transmitter', () => {
@@ -53,7 +53,6 @@ describe('the transmitter', () => {
         for (let k = 1; k < 10 * divider; k++) rows.push({ rst_n: 1, valid: k & 1, data: k & 255 });
         line.push(...frameOf(byte).flatMap((level) => new Array<number>(divider).fill(level)));
       });
-      const isLast = (cycle: number) => cycle === rows.length - 1;
       await onEveryEngine(design, rows, (read, engine) => {
         const sent = rows.map((_, cycle) => read('txd', cycle));
         // The line is one cycle behind the inputs, and the last frame's end is not seen.
@@ -63,7 +62,6 @@ describe('the transmitter', () => {
           taken.map(({ data }) => data),
           engine,
         ).toEqual(bytes);
-        expect(isLast(rows.length - 1)).toBe(true);
       });
     },
   );
@@ -138,9 +136,9 @@ describe('a transmitter that talks to a receiver', () => {
   it('hands over what it is given, in order', async () => {
     const design = rtlDesign(['uart.v']);
     const chance = new RandomBits(9);
-    const rows: Values[] = Array.from({ length: 1500 }, (_, cycle) => ({
+    const rows: Values[] = Array.from({ length: 1000 }, (_, cycle) => ({
       rst_n: cycle > 0 ? 1 : 0,
-      valid: cycle > 0 && cycle < 1400 && chance.next() % 20 === 0 ? 1 : 0,
+      valid: cycle > 0 && cycle < 900 && chance.next() % 20 === 0 ? 1 : 0,
       data: chance.next() & 255,
     }));
     await onEveryEngine(design, rows, (read, engine) => {
@@ -148,7 +146,7 @@ describe('a transmitter that talks to a receiver', () => {
       const got = rows.flatMap((_, cycle) =>
         read('strobe', cycle) ? [read('received', cycle)] : [],
       );
-      expect(got.length).toBeGreaterThan(15);
+      expect(got.length).toBeGreaterThan(10);
       expect(got, engine).toEqual(given.map(({ data }) => data));
     });
   });

@@ -23,11 +23,14 @@ function signalTwins(hierarchy: Hierarchy): CaseTwins[] {
   return modules.flatMap(({ signals }, module) => {
     const scope = firstScope[module]!;
     if (scope < 0) return [];
-    const placed = (i: number) => scopeStart[scope]! + signals[i]!.offset;
-    const nameOf = (i: number) => nameAt(hierarchy, placed(i)).replace(/\[[^\]]*\]$/, '');
+    const placed = (i: number): number => scopeStart[scope]! + signals[i]!.offset;
+    const nameOf = (i: number): string => {
+      const name = nameAt(hierarchy, placed(i));
+      return signals[i]!.isVector ? name.slice(0, name.lastIndexOf('[')) : name;
+    };
     return twinsAmong(signals.length, (i) => signals[i]!.name).map(([first, second]) => ({
-      first: signals[first]!.isVector ? nameOf(first) : nameAt(hierarchy, placed(first)),
-      second: signals[second]!.isVector ? nameOf(second) : nameAt(hierarchy, placed(second)),
+      first: nameOf(first),
+      second: nameOf(second),
       net: netOf[placed(second)]!,
     }));
   });

@@ -64,7 +64,7 @@ class Placing {
     for (const group of groups.values()) {
       if (group.length < SMALLEST) continue;
       const rank = (bit: number): number => this.#output[bit]!;
-      group.sort((p, q) => rank(p) - rank(q) || this.#source[p]! - this.#source[q]! || p - q);
+      group.sort((p, q) => rank(p) - rank(q) || p - q);
       this.#appendWhole(group, 0);
     }
   }

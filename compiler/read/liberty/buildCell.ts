@@ -1,4 +1,3 @@
-import { GateKind } from '../../circuit/gates.js';
 import type { NetId } from '../../circuit/ids.js';
 import { Children } from '../verilog/elaborate/children.js';
 import type { Recording } from '../verilog/elaborate/recording.js';
@@ -8,6 +7,7 @@ import { StateTableBuild } from './buildStateTable.js';
 import type { LibertyCell, LibertyPin } from './cell.js';
 import { CellBuild, type CellReport } from './cellBuild.js';
 import { contextOf } from './cellNets.js';
+import { drivePin, driveUnknown } from './drivePin.js';
 
 /** The nets of a cell whose logic has been built. */
 export interface BuiltCell {
@@ -29,11 +29,10 @@ export function buildCell(cell: LibertyCell, recording: Recording, report: CellR
   for (const [index, pin] of cell.pins.entries()) {
     if (pin.direction === 'input' || pin.direction === 'supply') continue;
     const net = build.nets.pins[index]!;
-    const value = refused(build, pin) ? undefined : shownBy(build, table, pin);
+    const value = shownBy(build, table, pin);
     if (value === SILENT) silent.push(pin);
-    else if (value !== undefined) recording.drive(net, GateKind.Buf, [value]);
-    // After a report nothing shall be said of nets without driver.
-    else if (pin.direction === 'output') recording.drive(net, GateKind.Unknown, []);
+    else if (value === undefined) driveUnknown(build, pin, net);
+    else drivePin(build, pin, net, value);
   }
   const { isRead } = usageOf(recording, new Children(), []);
   reportSilent(
@@ -62,29 +61,12 @@ function shownBy(
 const netOf = ({ cell, nets }: CellBuild, pin: LibertyPin): NetId =>
   nets.pins[cell.pins.indexOf(pin)]!;
 
-/** Refuses pins that are not always driven by 0 or 1. */
-function refused({ report, cell }: CellBuild, pin: LibertyPin): boolean {
-  const { threeState, driverType } = pin;
-  if (threeState !== undefined) {
-    const message = `output ${pin.name} of cell ${cell.name} has three states`;
-    report('not-supported', `${message}, which is not supported; ${MODEL_CURE}`, threeState);
-    return true;
-  }
-  const type = /\bopen_(drain|source)\b/.exec(driverType?.text ?? '');
-  if (driverType === undefined || type === null) return false;
-  const message = `output ${pin.name} of cell ${cell.name} is ${type[0]}`;
-  report('not-supported', `${message}, which is not supported; ${MODEL_CURE}`, driverType);
-  return true;
-}
-
 /** Refuses a cell of which some pins have no logic. */
 function reportSilent(build: CellBuild, pins: readonly LibertyPin[]): void {
-  const { report, cell, recording } = build;
+  const { report, cell } = build;
   const [first] = pins;
   if (first === undefined) return;
-  for (const pin of pins) {
-    if (pin.direction === 'output') recording.drive(netOf(build, pin), GateKind.Unknown, []);
-  }
+  for (const pin of pins) driveUnknown(build, pin, netOf(build, pin));
   const { clockGate } = cell;
   const names = pins.map(({ name }) => name);
   const shown = names.slice(0, 4).join(', ') + (names.length > 4 ? ', …' : '');

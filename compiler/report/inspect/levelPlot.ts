@@ -1,5 +1,6 @@
 import type { Inspection } from '../inspection.js';
 import { type Bin, binLabel, binned } from './bins.js';
+import { counted } from './netWords.js';
 
 const WIDTH = 760;
 const LEFT = 96;
@@ -15,9 +16,10 @@ interface Panel {
   readonly counts: readonly number[];
   /** The first index that is shown. */
   readonly first: number;
-  /** What the axes show, across and upright. */
+  /** What the axis across shows. */
   readonly across: string;
-  readonly upright: string;
+  /** One of the things that are counted. */
+  readonly unit: string;
   /** Stands in place of bars where there is nothing to count. */
   readonly empty: string;
 }
@@ -35,23 +37,23 @@ export function levelPlot(inspection: Inspection): string {
       counts: levels,
       first: 1,
       across: 'level: gates on the longest path up to and including this one',
-      upright: 'gates',
+      unit: 'gate',
       empty: 'no gate has a level',
     },
     {
       title: 'Depth between registers',
       counts: registerDepths,
       first: 0,
-      across: 'gates on the longest path from a register to the data of another',
-      upright: 'registers',
+      across: 'gates on the longest path from any register to the data of one',
+      unit: 'register',
       empty: 'no register leads to another',
     },
   ];
   const height = PANEL_TOP + panels.length * PANEL_HEIGHT;
   const title = `Levels of logic in ${top}`;
   const description =
-    `${figure(gates)} gates on ${figure(depth)} levels; ` +
-    `at most ${figure(deepest)} gates between registers.`;
+    `${counted(gates, 'gate')} on ${counted(depth, 'level')}; ` +
+    `at most ${counted(deepest, 'gate')} between registers.`;
   return `<svg xmlns="http://www.w3.org/2000/svg" viewBox="0 0 ${WIDTH} ${height}" width="${WIDTH}" height="${height}" role="img" aria-labelledby="plot-title plot-description">
 <title id="plot-title">${escaped(title)}</title>
 <desc id="plot-description">${escaped(description)}</desc>
@@ -100,7 +102,7 @@ function panelText(panel: Panel, top: number): string {
     `<line class="axis" x1="${LEFT}" y1="${base}" x2="${WIDTH - RIGHT}" y2="${base}"/>`,
     ...ticks(bins, base),
     text('quiet', LEFT + innerWidth / 2, base + 38, 'middle', panel.across),
-    `<text class="quiet" text-anchor="middle" transform="translate(20 ${base - BARS / 2}) rotate(-90)">${panel.upright}</text>`,
+    `<text class="quiet" text-anchor="middle" transform="translate(20 ${base - BARS / 2}) rotate(-90)">${panel.unit}s</text>`,
   ].join('\n');
 }
 
@@ -126,7 +128,7 @@ function bars(bins: readonly Bin[], panel: Panel, ceiling: number, base: number)
     // A single gate on a scale of a million is still to be seen.
     const shown = bin.count === 0 ? 0 : Math.max(height, 1);
     const x = round(LEFT + (i + 0.5) * step - width / 2);
-    const tip = `${binLabel(bin)}: ${figure(bin.count)} ${panel.upright}`;
+    const tip = `${binLabel(bin)}: ${counted(bin.count, panel.unit)}`;
     return `<rect class="bar" x="${x}" y="${round(base - shown)}" width="${round(width)}" height="${round(shown)}"><title>${tip}</title></rect>`;
   });
 }

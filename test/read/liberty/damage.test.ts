@@ -38,6 +38,10 @@ library ("demo") {
     bus (Q) { bus_type : nibble; direction : output; function : "IQ"; pin (Q[1:0]) { function : "IQN"; } }
     bundle (P) { members (P0, P1); direction : output; function : "G"; }
   }
+  cell (TBUF) {
+    pin (A) { direction : input; }
+    pin (Y) { direction : inout; function : "A"; three_state : "!A"; driver_type : "pull_up"; }
+  }
   cell (CG) {
     clock_gating_integrated_cell : "latch_posedge";
     statetable ("CK E", "IQ") { table : "L L/H : - : L/H, \\
@@ -51,7 +55,7 @@ library ("demo") {
 
 const files = { 'types.inc': 'type (two) { bit_width : 2; }\n' };
 const netlist = `module top(input a, output y);
-  NAND2 n(.A(a), .Y(y)); DFF f(.D(a), .Q()); LATB l(.G(a)); CG g(.CK(a));
+  NAND2 n(.A(a), .Y(y)); DFF f(.D(a), .Q()); LATB l(.G(a)); CG g(.CK(a)); TBUF t(.A(a), .Y(b));
 endmodule`;
 
 type Change = readonly [place: number, removed: number, added: string];
@@ -130,7 +134,7 @@ describe('a damaged library', () => {
       );
       expect(problems).not.toEqual([]);
       const names = library.cells.map(({ name }) => name);
-      const intact = ['NAND2', 'DFF', 'LATB', 'CG'].filter((name) => !names.includes(name));
+      const intact = ['NAND2', 'DFF', 'LATB', 'TBUF', 'CG'].filter((name) => !names.includes(name));
       // A cell whose own opening brace is gone is the only one that may be lost.
       expect(intact.length).toBeLessThanOrEqual(1);
     }

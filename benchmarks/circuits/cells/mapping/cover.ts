@@ -21,8 +21,8 @@ const mostCuts = 40;
 
 /**
  * Covers the logic that the roots need with cells, by the smallest area over each tree of gates
- * that are read once. Method: K. Keutzer, "DAGON: technology binding and local optimization by DAG
- * matching", 1987; cells are found by truth table in place of shape.
+ * that are read once. Method: A. V. Aho, S. C. Johnson, "Optimal code generation for expression
+ * trees", 1976, with cells in place of instructions, found by truth table in place of shape.
  */
 export function cover(graph: LogicGraph, roots: ReadonlySet<LocalNet>): Covering[] {
   const fanOut = graph.fanOut();

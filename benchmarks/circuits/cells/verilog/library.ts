@@ -1,7 +1,7 @@
 import { type Cell, libraryName, pinNames } from '../cell.js';
 import { truthTable } from '../expression.js';
 import { cells } from '../library.js';
-import { cellModule, logicModels, type Models, physicalModels, triStateModels } from './modules.js';
+import { cellModule, logicModels, type Models, noModels, triStateModels } from './modules.js';
 import { logicPrimitive, type Primitive } from './primitives.js';
 import {
   flopModels,
@@ -53,7 +53,7 @@ function modelsOf(cell: Cell): Models {
     case 'clockGate':
       return gateModels(cell);
     case 'physical':
-      return physicalModels(cell);
+      return noModels;
   }
 }
 

@@ -2,7 +2,6 @@ import {
   areaOf,
   type Cell,
   type LogicCell,
-  type PhysicalCell,
   type Pin,
   pinNames,
   primitiveName,
@@ -98,7 +97,5 @@ export function triStateModels({ is, enable }: TriStateCell): Models {
   };
 }
 
-/** A cell without logic has no models. */
-export function physicalModels(_cell: PhysicalCell): Models {
-  return { functional: [], timing: [] };
-}
+/** The models of a cell without logic. */
+export const noModels: Models = { functional: [], timing: [] };

@@ -2,6 +2,7 @@ import type { AssignStatement, Expression, Statement } from '../syntax.js';
 import type { Context, Exits } from './context.js';
 import { Sequence } from './exits.js';
 import { lowerCondition } from './expressions.js';
+import { LoopCircle } from './loopCircle.js';
 import { type Placed, report } from './report.js';
 import { countOf } from './widths.js';
 
@@ -18,7 +19,12 @@ export function executeFor(
 ): Exits | undefined {
   const { initial, condition, step, body } = statement;
   assign(initial, context, true);
-  return unroll(condition, body, context, () => assign(step, context, true));
+  const circle = new LoopCircle(statement, context);
+  return unroll(condition, body, context, () => {
+    circle.endTurn();
+    assign(step, context, true);
+    circle.startTurn();
+  });
 }
 
 /** Unrolls a `while` loop. */

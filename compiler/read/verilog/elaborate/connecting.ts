@@ -9,6 +9,7 @@ import { connectGate } from './gateInstances.js';
 import { Flag } from './symbols.js';
 import type { Template, TemplatePort } from './template.js';
 import { connectionExpression, drivenNets, NOT_SIMPLE, readNets, simpleNet } from './terminals.js';
+import { connectUnknownBox } from './unknownBoxes.js';
 
 /** Connects every instance, and builds the built-in gates (IEEE 1364-2005, clause 12.3). */
 export function connectInstances(body: ModuleBody): void {
@@ -41,6 +42,12 @@ function connectInstance(
   const table = body.module.instances;
   const first = table.connectionStart(instance);
   const end = table.connectionStart(instance + 1);
+  const definition = table.module(instance);
+  const isUnknown = child === NOT_PLACED && body.design.definition(definition) === undefined;
+  if (isUnknown && body.design.blackBoxes.has(definition)) {
+    connectUnknownBox(body, scope, instance);
+    return;
+  }
   if (child === NOT_PLACED) {
     // Its outputs are unknown; implicit nets shall not be complained about on top.
     for (let c = first; c < end; c++) simpleNet(body, scope, table, c, false);
@@ -199,6 +206,12 @@ function finishUnconnected(body: ModuleBody, connected: Connected): void {
           children.setPort(element, port.offset + bit, net);
         }
       }
-    } else body.openInputs.push({ child, port, instance });
+      // Library cells have supply pins that mostly stay open, and that they do not read.
+    } else if (isRead(template, port)) body.openInputs.push({ child, port, instance });
   }
+}
+
+function isRead({ reads }: Template, { offset, width }: TemplatePort): boolean {
+  for (let place = offset; place < offset + width; place++) if (reads[place] === 1) return true;
+  return false;
 }

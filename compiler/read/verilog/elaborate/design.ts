@@ -25,6 +25,14 @@ export interface TemplateMakers {
     outer: Outer | undefined,
   ): Template;
   primitive(design: Design, primitive: PrimitiveSyntax): Template;
+  box(design: Design, definition: Definition, overrides: Overrides, place: Position): Template;
+}
+
+/** What belongs to a design beside its syntax. */
+export interface DesignChoice {
+  readonly cells?: readonly LibraryCell[];
+  readonly dropped?: readonly ModuleSyntax[];
+  readonly blackBoxes?: readonly string[];
 }
 
 /** Value of `Design.template` where there is none because of an error. */
@@ -42,6 +50,10 @@ export class Design {
   readonly modules: readonly ModuleSyntax[];
   readonly primitives: readonly PrimitiveSyntax[];
   readonly cells: readonly LibraryCell[];
+  /** Modules that others have replaced. */
+  readonly dropped: readonly ModuleSyntax[];
+  /** Names of modules that instances are not to have the inside of. */
+  readonly blackBoxes: ReadonlySet<NameId>;
   readonly templates: Template[] = [];
   readonly driven = new DrivenNets(this.templates);
   readonly unknown: UnknownModules;
@@ -64,14 +76,17 @@ export class Design {
     sources: SourceMap,
     diagnostics: Diagnostics,
     makers: TemplateMakers,
-    cells: readonly LibraryCell[] = [],
+    choice: DesignChoice = {},
   ) {
+    const { cells = [], dropped = [], blackBoxes = [] } = choice;
     this.names = syntax.names;
     this.sources = sources;
     this.diagnostics = diagnostics;
     this.modules = syntax.modules;
     this.primitives = syntax.primitives;
     this.cells = cells;
+    this.dropped = dropped;
+    this.blackBoxes = new Set(blackBoxes.map((name) => syntax.names.internText(name)));
     this.#makers = makers;
     this.unknown = new UnknownModules(this);
     this.undriven = new LimitedReport('net-undriven', MAX_UNDRIVEN);
@@ -155,6 +170,9 @@ export class Design {
     const definition = this.#at(index);
     const twin = this.#twins.get(index);
     if (twin !== undefined) this.shadowed.add(twin);
+    if (this.blackBoxes.has(definition.name)) {
+      return this.templates.push(this.#makers.box(this, definition, overrides, place)) - 1;
+    }
     if ('template' in definition) {
       return this.templates.push(definition.template(this, place)) - 1;
     }

@@ -2,8 +2,11 @@ import { CircuitBuilder } from '../../../circuit/builder.js';
 import { type BusProblem, resolveBuses } from '../../../circuit/busResolution.js';
 import type { Circuit } from '../../../circuit/circuit.js';
 import type { Diagnostics } from '../../../diagnostics/diagnostics.js';
+import type { Source } from '../../../diagnostics/source.js';
 import type { SourceMap } from '../../../diagnostics/sourceMap.js';
-import type { VerilogSyntax } from '../syntax.js';
+import type { ModuleSyntax, VerilogSyntax } from '../syntax.js';
+import { addBoxPorts } from './boxPorts.js';
+import { compileBox } from './compileBox.js';
 import { compileModule } from './compileModule.js';
 import { isWired } from './defaults.js';
 import { Design, NO_TEMPLATE } from './design.js';
@@ -11,7 +14,9 @@ import type { LibraryCell } from './libraryCell.js';
 import { DistinctDiagnostics, wordSpan } from './messages.js';
 import { noOverrides } from './overrides.js';
 import { compilePrimitive } from './primitives.js';
+import { withReplacements } from './replacements.js';
 import { Stamper } from './stamp.js';
+import type { Template } from './template.js';
 import { chooseTop } from './top.js';
 import { addTopPorts, checkTopPorts } from './topPorts.js';
 
@@ -21,6 +26,10 @@ export interface ElaborateOptions {
   readonly top?: string;
   /** Cells of libraries in other forms, in the order of their files. */
   readonly cells?: readonly LibraryCell[];
+  /** Names of modules whose instances become ports of the circuit, see `addBoxPorts`. */
+  readonly blackBoxes?: readonly string[];
+  /** By the name of a module the source that its definition is taken from, see `readNetlist`. */
+  readonly replacements?: ReadonlyMap<string, Source>;
 }
 
 /**
@@ -38,8 +47,10 @@ export function elaborate(
   diagnostics: Diagnostics,
 ): Circuit | undefined {
   const found = new DistinctDiagnostics();
-  const makers = { module: compileModule, primitive: compilePrimitive };
-  const design = new Design(syntax, sources, found, makers, options.cells);
+  const makers = { module: compileModule, primitive: compilePrimitive, box: compileBox };
+  const { blackBoxes = [], replacements = new Map(), cells = [] } = options;
+  const replaced = withReplacements(syntax, cells, replacements, sources, found);
+  const design = new Design(replaced.syntax, sources, found, makers, { ...replaced, blackBoxes });
   const circuit = build(design, options.top);
   for (const { code, message, span, related } of found.list) {
     diagnostics.add(code, message, span, related);
@@ -56,6 +67,7 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
   if (index === NO_TEMPLATE) return undefined;
   const top = design.templates[index]!;
   design.finish();
+  checkBlackBoxes(design, module);
   checkTopPorts(design, module, top);
   // What a missing module would drive is not known.
   if (design.unknown.isEmpty) {
@@ -65,13 +77,35 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
     );
   }
   if (design.diagnostics.hasErrors) return undefined;
-  const builder = new CircuitBuilder();
+  const builder = new CircuitBuilder(expectedNets(design, top));
   for (const source of design.sources.sources) builder.addSource(source);
-  const boundary = new Stamper(builder, design.templates, design.names).stamp(top);
+  const stamper = new Stamper(builder, design.templates, design.names);
+  const boundary = stamper.stamp(top);
   addTopPorts(builder, design, top, boundary);
+  addBoxPorts(builder, design, stamper.boxes);
   reportLateDrivers(design, builder);
   if (!design.diagnostics.hasErrors) reportBuses(design, resolveBuses(builder));
   return design.diagnostics.hasErrors ? undefined : builder.finish(top.name);
+}
+
+/** A guess that is good for flat netlists; all it does is to save copying. */
+function expectedNets({ templates }: Design, { recording, children }: Template): number {
+  let nets = recording.netCount + 1024;
+  for (let child = 0; child < children.count; child++) {
+    const { recording, boundary } = templates[children.template(child)]!;
+    nets += recording.netCount - boundary.length;
+  }
+  return nets;
+}
+
+function checkBlackBoxes(design: Design, top: ModuleSyntax): void {
+  const used = new Set(design.templates.filter(({ isBox }) => isBox).map(({ name }) => name));
+  for (const name of design.blackBoxes) {
+    const text = design.text(name);
+    if (used.has(text) && name !== top.name) continue;
+    const message = `no instance of a module ${text} is in the design, so that it can be no black box`;
+    design.diagnostics.add('choice-unknown', message);
+  }
 }
 
 // Conflicts are found module by module; only what a hierarchical name drives inside an instance

@@ -2,11 +2,18 @@ import type { NameId } from '../../names.js';
 
 const EMPTY = 0xffffffff;
 
-/** A map from names to small numbers: eight to sixteen bytes an entry, no objects. */
+// From so many entries on a table may be a plain list, if a quarter of that list is in use.
+const LEAST_DENSE = 4096;
+const SPARSITY = 4;
+
+/** A map from names to numbers below 2^31: some eight to sixteen bytes an entry, no objects. */
 export class NameIndex {
   // Pairs of name and number in an open hash table; its capacity is a power of two.
   #slots: Uint32Array;
   #count = 0;
+  #greatest = 0;
+  /** In place of the hash table: the number of each name, -1 for none. */
+  #dense: Int32Array | undefined;
 
   constructor(capacity = 4) {
     this.#slots = new Uint32Array(2 * capacity).fill(EMPTY);
@@ -14,18 +21,23 @@ export class NameIndex {
 
   /** The number of a name, or -1 if it has none. */
   get(name: NameId): number {
+    const dense = this.#dense;
+    if (dense !== undefined) return name < dense.length ? dense[name]! : -1;
     const slot = this.#slot(name);
     return this.#slots[slot] === name ? this.#slots[slot + 1]! : -1;
   }
 
   /** Gives a name its number. */
   set(name: NameId, value: number): void {
-    let slot = this.#slot(name);
+    if (this.#dense === undefined && this.#count * 4 >= this.#slots.length) this.#grow();
+    if (name > this.#greatest) this.#greatest = name;
+    if (this.#dense !== undefined) {
+      if (name >= this.#dense.length) this.#dense = longer(this.#dense, 2 * name);
+      this.#dense[name] = value;
+      return;
+    }
+    const slot = this.#slot(name);
     if (this.#slots[slot] !== name) {
-      if (this.#count * 4 >= this.#slots.length) {
-        this.#grow();
-        slot = this.#slot(name);
-      }
       this.#slots[slot] = name;
       this.#count++;
     }
@@ -33,17 +45,26 @@ export class NameIndex {
   }
 
   // Name ids are dense, so that a multiplicative hash spreads them well. The multiplier is 2^32
-  // divided by the golden ratio (Knuth, TAOCP vol. 3, 6.4; from memory).
+  // divided by the golden ratio (Knuth, TAOCP vol. 3, 6.4; from memory). Eight names in a row stay
+  // together, in one line of the cache: netlists use them together.
   #slot(name: NameId): number {
     const slots = this.#slots;
     const mask = slots.length - 2;
-    let slot = (Math.imul(name, 0x9e3779b1) >>> 6) & mask;
+    const spread = (Math.imul(name >>> 3, 0x9e3779b1) >>> 6) << 4;
+    let slot = (spread | ((name & 7) << 1)) & mask;
     while (slots[slot] !== EMPTY && slots[slot] !== name) slot = (slot + 2) & mask;
     return slot;
   }
 
   #grow(): void {
     const old = this.#slots;
+    if (this.#count >= LEAST_DENSE && this.#greatest < SPARSITY * this.#count) {
+      const dense = longer(new Int32Array(0), 2 * this.#greatest);
+      for (let i = 0; i < old.length; i += 2) if (old[i] !== EMPTY) dense[old[i]!] = old[i + 1]!;
+      this.#dense = dense;
+      this.#slots = new Uint32Array(0);
+      return;
+    }
     this.#slots = new Uint32Array(old.length * 2).fill(EMPTY);
     for (let i = 0; i < old.length; i += 2) {
       if (old[i] === EMPTY) continue;
@@ -52,4 +73,10 @@ export class NameIndex {
       this.#slots[slot + 1] = old[i + 1]!;
     }
   }
+}
+
+function longer(list: Int32Array, length: number): Int32Array {
+  const made = new Int32Array(length).fill(-1);
+  made.set(list);
+  return made;
 }

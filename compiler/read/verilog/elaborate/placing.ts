@@ -92,7 +92,8 @@ function placeInstance(
   const definition = table.module(instance);
   const position = table.position(instance);
   if (design.definition(definition) === undefined) {
-    design.unknown.add(table, instance);
+    // The ports of an unknown black box are known when its connections are.
+    if (!design.blackBoxes.has(definition)) design.unknown.add(table, instance);
     return;
   }
   const extras = table.extras(instance);

@@ -5,6 +5,16 @@ import type { NameTable } from '../../names.js';
 import { BUS_PART, BusPin, DROPPED, type Origin, Pin, unpackAttributes } from './recording.js';
 import type { Template } from './template.js';
 
+/** An instance of a black box in the circuit. */
+export interface PlacedBox {
+  readonly template: Template;
+  /** Dotted path of the instance. */
+  readonly path: string;
+  /** The circuit's net at each place of the boundary, `NO_NET` where nothing is connected. */
+  readonly nets: readonly NetId[];
+  readonly origin: Origin;
+}
+
 /** A template that is being stamped: how far its children are, and where its nets went. */
 interface Frame {
   template: Template;
@@ -33,6 +43,8 @@ export class Stamper {
   readonly #lists: NetId[][] = [];
   /** Index of the names of each template's first block in the circuit. */
   readonly #modules = new Map<Template, number>();
+  /** The black boxes stamped so far. */
+  readonly boxes: PlacedBox[] = [];
 
   constructor(builder: CircuitBuilder, templates: readonly Template[], names: NameTable) {
     this.#builder = builder;
@@ -72,7 +84,21 @@ export class Stamper {
     if (name !== 0) {
       this.#addScopes(frame, this.#names.text(name), parent.scopes[children.block(child)]!);
     }
+    if (template.isBox) this.#addBox(parent, child, frame);
     return template.children.count > 0;
+  }
+
+  #addBox(parent: Frame, child: number, { template, nets, scopes }: Frame): void {
+    const { children } = parent.template;
+    const isOpen = (place: number): boolean => children.port(child, place) === NO_NET;
+    this.boxes.push({
+      template,
+      path: this.#builder.hierarchy.path(scopes[0]!),
+      nets: Array.from(template.boundary, (net, place) =>
+        isOpen(place) ? NO_NET : netId(nets[net]!),
+      ),
+      origin: parent.origin ?? children.origin(child),
+    });
   }
 
   #enter(depth: number, template: Template, origin: Origin | undefined): Frame {

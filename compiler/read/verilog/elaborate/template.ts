@@ -60,6 +60,8 @@ export interface BlockNames {
 export interface Template {
   readonly name: string;
   readonly isCell: boolean;
+  /** Set for a black box: its ports become ports of the circuit. */
+  readonly isBox?: true;
   readonly recording: Recording;
   readonly children: Children;
   readonly canonical: Uint32Array | undefined;

@@ -18,7 +18,9 @@ export function chooseTop(design: Design, wanted: string | undefined): ModuleSyn
     return undefined;
   }
   const { used, parents } = instantiations(design);
-  const roots = design.modules.filter(({ name }) => !used.has(name));
+  const roots = design.modules.filter(
+    ({ name }) => !used.has(name) && !design.blackBoxes.has(name),
+  );
   const noCells = roots.filter((module) => !module.isCell);
   const choices = noCells.length === 0 ? roots : noCells;
   const holders = choices.filter(({ name }) => parents.has(name));
@@ -45,7 +47,7 @@ function instantiations(design: Design): {
 } {
   const used = new Set<NameId>();
   const parents = new Set<NameId>();
-  for (const { name, instances } of design.modules) {
+  for (const { name, instances } of [...design.modules, ...design.dropped]) {
     for (let instance = 0; instance < instances.count; instance++) {
       const child = instances.module(instance);
       // A module may instantiate itself with other parameters.

@@ -43,7 +43,8 @@ function reportOpenInput(
   isDriven: (net: NetId) => boolean,
 ): void {
   const { children, design, module } = body;
-  const { reads, drives } = design.templates[children.template(child)]!;
+  const { reads, drives, isBox } = design.templates[children.template(child)]!;
+  if (isBox) return;
   const isOpen = (place: number): boolean => {
     const net = children.port(child, place);
     const hasValue = drives[place] !== Drive.None || (net !== NO_NET && isDriven(net));

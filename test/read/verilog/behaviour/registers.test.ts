@@ -112,6 +112,27 @@ describe('an edge-sensitive always', () => {
     expect(simulation.bits('q')).toBe('1000');
     expect(simulation.bits('r')).toBe('1000');
   });
+
+  it('may share a loop index with others where `disable` leaves the loop', () => {
+    const first = (name: string, target: string) => `begin : ${name}
+      ${target} 8;
+      for (i = 0; i < 8; i = i + 1) if (d[i]) begin ${target} i; disable ${name}; end
+    end`;
+    const { simulate, diagnostics, circuit } = bench(`
+      input clk; input [7:0] d; reg [3:0] y, q; reg [7:0] r; integer i;
+      always @* ${first('now', 'y =')}
+      always @(posedge clk) ${first('later', 'q <=')}
+      always @(posedge clk) for (i = 0; i < 8; i = i + 1) r[i] <= d[7 - i];
+    `);
+    expect(diagnostics).toEqual([]);
+    expect(circuit.registers.count).toBe(12);
+    const simulation = simulate();
+    simulation.set({ clk: 0, d: 0b00101000 });
+    simulation.tick();
+    expect(['y', 'q', 'r'].map((name) => simulation.number(name))).toEqual([3, 3, 0b00010100]);
+    simulation.set({ d: 0 });
+    expect([simulation.number('y'), simulation.number('q')]).toEqual([8, 3]);
+  });
 });
 
 describe('asynchronous controls', () => {
@@ -178,6 +199,46 @@ describe('asynchronous controls', () => {
       const simulation = simulate();
       simulation.set({ clk: 0, rst: 1, pre: 1, d: 0 });
       expect(simulation.number('q')).toBe(first === 'pre' ? 1 : 0);
+    }
+  });
+
+  it('may be tested in a task or a function', () => {
+    const { simulate, diagnostics } = bench(`
+      input clk, rst, pre, d; reg q;
+      function isPreset(input any); isPreset = pre; endfunction
+      task step; if (rst) q <= 0; else if (isPreset(0)) q <= 1; else q <= d; endtask
+      always @(posedge pre or posedge clk or posedge rst) step;
+    `);
+    expect(diagnostics).toEqual([]);
+    const simulation = simulate();
+    const qWith = (inputs: Record<string, number>) => {
+      simulation.set(inputs);
+      return simulation.number('q');
+    };
+    expect(qWith({ clk: 0, rst: 0, pre: 1, d: 0 })).toBe(1);
+    expect(qWith({ rst: 1 })).toBe(0);
+    expect(qWith({ rst: 0, pre: 0, d: 1 })).toBe(0);
+    simulation.tick();
+    expect(simulation.number('q')).toBe(1);
+  });
+
+  it('may be bits of one vector with the clock', () => {
+    const { circuit, simulate, diagnostics } = bench(`
+      input [1:0] c; input d; reg q;
+      always @(posedge c[1] or negedge c[0]) if (!c[0]) q <= 0; else q <= d;
+    `);
+    expect(diagnostics).toEqual([]);
+    expect(circuit.registers.reset[0]).not.toBe(NO_NET);
+    const simulation = simulate();
+    for (const [c, q] of [
+      [0b00, 0],
+      [0b01, 0],
+      [0b11, 1],
+      [0b01, 1],
+      [0b00, 0],
+    ] as const) {
+      simulation.set({ c, d: 1 });
+      expect(simulation.number('q')).toBe(q);
     }
   });
 
@@ -264,6 +325,9 @@ describe('an edge-sensitive always is refused', () => {
       'not-supported',
       'posedge clk or posedge rst',
     ],
+    ['always @(posedge clk or negedge clk) q <= d;', 'not-supported', 'posedge clk or negedge clk'],
+    ['always @(posedge clk) fork q <= d; join', 'not-supported', ''],
+    ['always @(posedge clk) q <= @(posedge d) rst;', 'not-supported', ''],
     ['always @(posedge clk) w <= d;', 'target-invalid', 'w'],
     ['always @(posedge clk) begin q <= d; @(posedge clk) r <= d; end', 'not-supported', ''],
     ['always q = ~q;', 'not-supported', ''],

@@ -1,0 +1,72 @@
+import { PartKind, Strength } from '../../circuit/busParts.js';
+import { GateKind } from '../../circuit/gates.js';
+import { type NetId, NO_NET } from '../../circuit/ids.js';
+import { MODEL_CURE } from './buildState.js';
+import type { LibertyPin } from './cell.js';
+import type { CellBuild } from './cellBuild.js';
+import { contextOf } from './cellNets.js';
+import { wordsOf } from './words.js';
+
+/** How a pin drives its two values, and to which it is pulled. */
+interface DriverType {
+  readonly zero?: Strength;
+  readonly one?: Strength;
+  readonly pull?: GateKind;
+}
+
+/** The words of `driver_type` (what they mean is from memory). */
+const driverTypes: Readonly<Record<string, DriverType>> = {
+  open_drain: { one: Strength.HighZ },
+  open_source: { zero: Strength.HighZ },
+  pull_down: { pull: GateKind.Zero },
+  pull_up: { pull: GateKind.One },
+  resistive: { zero: Strength.Pull, one: Strength.Pull },
+  resistive_0: { zero: Strength.Pull },
+  resistive_1: { one: Strength.Pull },
+};
+
+/**
+ * Lets a pin drive a value: always, or as a part of a bus where it has `three_state`, at 1 of which
+ * it does not drive, or a `driver_type`. Reports what it cannot do.
+ */
+export function drivePin(build: CellBuild, pin: LibertyPin, net: NetId, value: NetId): void {
+  const type = driverTypeOf(build, pin);
+  const { threeState } = pin;
+  const disabled = threeState && build.function(threeState, contextOf(pin));
+  if (type === undefined || (threeState !== undefined && disabled === undefined)) {
+    driveUnknown(build, pin, net);
+    return;
+  }
+  const { recording } = build;
+  const { zero = Strength.Strong, one = Strength.Strong, pull } = type;
+  if (disabled === undefined && zero === Strength.Strong && one === Strength.Strong) {
+    recording.drive(net, GateKind.Buf, [value]);
+    return;
+  }
+  const control = disabled === undefined ? NO_NET : build.gate(GateKind.Not, disabled);
+  recording.busPart(net, value, control, { kind: PartKind.Driver, zero, one });
+  if (pull === undefined) return;
+  const strengths = { zero: Strength.Pull, one: Strength.Pull };
+  recording.busPart(net, recording.constant(pull), NO_NET, { kind: PartKind.Driver, ...strengths });
+}
+
+/** After a report: nothing more shall be said of nets without driver. */
+export function driveUnknown({ recording }: CellBuild, pin: LibertyPin, net: NetId): void {
+  if (pin.direction === 'output') recording.drive(net, GateKind.Unknown, []);
+}
+
+function driverTypeOf({ cell, report }: CellBuild, pin: LibertyPin): DriverType | undefined {
+  const { driverType } = pin;
+  if (driverType === undefined) return {};
+  let type: DriverType = {};
+  for (const word of wordsOf(driverType.text)) {
+    const known = driverTypes[word];
+    if (known === undefined) {
+      const message = `pin ${pin.name} of cell ${cell.name} has the driver_type ${word}`;
+      report('not-supported', `${message}, which is not supported; ${MODEL_CURE}`, driverType);
+      return undefined;
+    }
+    type = { ...type, ...known };
+  }
+  return type;
+}

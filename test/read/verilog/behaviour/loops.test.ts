@@ -1,0 +1,54 @@
+import { describe, expect, it } from 'vitest';
+import { bench, constantText, problemsOf } from './bench.js';
+
+describe('a for loop', () => {
+  it('is refused where its index cannot reach the end, however often it comes round', () => {
+    const problems = problemsOf(`
+      input [7:0] d; reg [7:0] y; reg [2:0] i;
+      always @* for (i = 0; i < 8; i = i + 1) y[i] = d[7 - i];`);
+    expect(problems.map(({ code, at }) => [code, at])).toEqual([['loop-unbounded', 'i < 8']]);
+    expect(problems[0]!.message).toContain('`i` comes back to 0');
+  });
+
+  it.each([
+    ['a step of nothing', 'for (i = 2; i < 8; i = i) n = n + 1;', '2'],
+    ['an index that counts down past 0', 'for (i = 7; i >= 0; i = i - 1) n = n + 1;', '7'],
+  ])('is refused with %s', (_, loop, value) => {
+    const problems = problemsOf(`
+      reg [7:0] n; reg [3:0] i;
+      always @* begin n = 0; ${loop} end`);
+    expect(problems.map(({ code }) => code)).toEqual(['loop-unbounded']);
+    expect(problems[0]!.message).toContain(`comes back to ${value} before`);
+  });
+
+  it('may come back to a value of its index where something else ends it', () => {
+    const loops = [
+      'for (i = 0; n < 9; i = i + 1) n = n + 1;',
+      'for (i = 0; i < 3; i = n[0] | m) begin n = n + 1; if (n == 9) m = 3; end',
+      'for (i = 0; i < 3; i = i + 1) begin n = n + 1; if (i == 2 && n < 9) i = 3; end',
+      'begin : all for (i = 0; 1; i = i + 1) begin n = n + 1; if (n == 9) disable all; end end',
+      'for (i = 0; goesOn(0); i = i + 1) n = n + 1;',
+    ];
+    for (const loop of loops) {
+      const { diagnostics, simulate } = bench(`
+        reg [7:0] n; reg [1:0] i, m;
+        function goesOn(input any); goesOn = n < 9; endfunction
+        always @* begin n = 0; m = 0; ${loop} end`);
+      expect(diagnostics).toEqual([]);
+      expect([loop, simulate().number('n')]).toEqual([loop, 9]);
+    }
+  });
+
+  it('ends in a constant function as anywhere else', () => {
+    const items = `
+      function integer log2(input integer n);
+        for (log2 = 0; n > 1; log2 = log2 + 1) n = n >> 1;
+      endfunction`;
+    expect(constantText('log2(1000)', items)).toBe(`32'sb${(9).toString(2).padStart(32, '0')}`);
+    const endless = `
+      function [3:0] f(input any); reg [1:0] i;
+        for (i = 0; i < 4; i = i + 1) f = i;
+      endfunction`;
+    expect(constantText('f(0)', endless)).toContain('comes back to 0');
+  });
+});
