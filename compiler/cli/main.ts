@@ -8,6 +8,7 @@ import { inspectCommand } from './inspect.js';
 import { reason } from './netlists.js';
 import { printDiagnostics } from './printDiagnostics.js';
 import { runCommand } from './run.js';
+import { settleCommand } from './settle.js';
 import { UsageError } from './usageError.js';
 import { version } from './version.js';
 
@@ -27,7 +28,7 @@ Example:
   clockstride run counter.v --random 1 --cycles 1000000 --response counter.csv`,
     )
     .exitOverride();
-  for (const verb of [inspectCommand(), runCommand(), benchCommand()]) {
+  for (const verb of [inspectCommand(), runCommand(), settleCommand(), benchCommand()]) {
     command.addCommand(verb.exitOverride());
   }
   return command;

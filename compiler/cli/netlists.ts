@@ -1,12 +1,12 @@
 import { readFileSync } from 'node:fs';
 import { readFile } from 'node:fs/promises';
-import { dirname, join } from 'node:path';
 import { type Command, InvalidArgumentError } from 'commander';
 import type { Circuit } from '../circuit/circuit.js';
 import { type CompileOptions, type Design, designOf } from '../compile.js';
 import { type Diagnostic, Diagnostics, InputError } from '../diagnostics/diagnostics.js';
 import { Source } from '../diagnostics/source.js';
 import { readNetlist } from '../read/readNetlist.js';
+import { includeReader } from '../read/verilog/includes.js';
 import { printDiagnostics } from './printDiagnostics.js';
 
 /** The options that every verb which reads netlists has. */
@@ -14,15 +14,28 @@ export interface NetlistOptions {
   readonly top?: string;
   readonly define?: ReadonlyMap<string, string>;
   readonly include?: readonly string[];
+  readonly replace?: ReadonlyMap<string, string>;
+  readonly blackBox?: readonly string[];
 }
 
 /** Adds the netlist arguments and the options common to the verbs that read them. */
 export function addNetlistOptions(command: Command): Command {
   return command
-    .argument('<netlist...>', 'netlist files: .v Verilog, .bench the ISCAS text form')
+    .argument('<netlist...>', 'netlist files: .v Verilog, .lib Liberty, .bench the ISCAS form')
     .option('--top <name>', 'top module; the one that no other instantiates, unless given')
     .option('--define <name[=text]>', 'define a Verilog macro (repeatable)', addDefine)
-    .option('--include <dir>', 'look for included files there too (repeatable)', addToList);
+    .option('--include <dir>', 'look for included files there too (repeatable)', addToList)
+    .option(
+      '--replace <name=file>',
+      'take module NAME from this Verilog file, whatever others define (repeatable)',
+      addReplacement,
+    )
+    .option(
+      '--black-box <name>',
+      'leave out what is inside module NAME: its outputs become inputs, its inputs outputs\n' +
+        '(repeatable)',
+      addToList,
+    );
 }
 
 /** A circuit as read, and the warnings and notes that came with it. */
@@ -38,13 +51,20 @@ export async function loadCircuit(
 ): Promise<LoadedCircuit> {
   const diagnostics = new Diagnostics();
   const sources = await Promise.all(files.map((file) => readSource(file, diagnostics)));
+  const replacements = new Map<string, Source>();
+  for (const [name, file] of options.replace ?? []) {
+    const source = await readSource(file, diagnostics);
+    if (source !== undefined) replacements.set(name, source);
+  }
   diagnostics.throwIfErrors();
   const circuit = readNetlist(
     sources.filter((source) => source !== undefined),
     {
       ...(options.top !== undefined && { top: options.top }),
       ...(options.define !== undefined && { defines: options.define }),
-      readInclude: (path, from) => readIncluded(path, from, options.include ?? []),
+      ...(options.blackBox !== undefined && { blackBoxes: options.blackBox }),
+      replacements,
+      readInclude: includeReader(options.include ?? [], bytesOf),
     },
     diagnostics,
   );
@@ -73,21 +93,14 @@ async function readSource(path: string, diagnostics: Diagnostics): Promise<Sourc
   }
 }
 
-// Relative to the file that includes it first, then in the directories of --include.
-function readIncluded(
-  path: string,
-  from: Source,
-  directories: readonly string[],
-): Source | undefined {
-  for (const directory of [dirname(from.path), ...directories]) {
-    const candidate = join(directory, path);
-    try {
-      return new Source(candidate, readFileSync(candidate));
-    } catch {
-      // Not in this directory: the next one may have it, and the reader reports if none has.
-    }
+// Undefined where there is no such file: the next folder may have it, and the reader reports it
+// if none has.
+function bytesOf(path: string): Uint8Array | undefined {
+  try {
+    return readFileSync(path);
+  } catch {
+    return undefined;
   }
-  return undefined;
 }
 
 /** What the operating system said, in words. */
@@ -105,6 +118,14 @@ function addDefine(text: string, before: ReadonlyMap<string, string> = new Map()
     throw new InvalidArgumentError(`${name} is no macro name.`);
   }
   return new Map(before).set(name!, value ?? '');
+}
+
+function addReplacement(text: string, before: ReadonlyMap<string, string> = new Map()) {
+  const [, name, file] = /^([^=]+)=(.+)$/.exec(text) ?? [];
+  if (name === undefined || file === undefined) {
+    throw new InvalidArgumentError('Give NAME=FILE.');
+  }
+  return new Map(before).set(name, file);
 }
 
 function addToList(text: string, before: readonly string[] = []): string[] {

@@ -1,5 +1,14 @@
-/** Flip-flops and a latch as user-defined primitives (IEEE 1364-2005, clause 8), for the parts. */
+/** A latch and flip-flops as user-defined primitives (IEEE 1364-2005, clause 8), for the parts. */
 export const cells = `
+  primitive high_latch (q, g, d);
+    output q; reg q; input g, d;
+    table
+      1 0 : ? : 0;
+      1 1 : ? : 1;
+      0 ? : ? : -;
+    endtable
+  endprimitive
+
   primitive rising_d (q, clk, d);
     output q; reg q; input clk, d;
     table

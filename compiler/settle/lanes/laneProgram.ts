@@ -103,11 +103,11 @@ export class LaneProgram {
   #commit(base: number): void {
     const memory = this.#memory;
     const committed = this.#committed;
-    this.#next.forEach((place, bit) => {
-      for (let i = 0; i < BLOCK_WORDS; i++) {
-        committed[bit * BLOCK_WORDS + i] = memory[base + place + i]!;
-      }
-    });
+    const next = this.#next;
+    for (let bit = 0, to = 0; bit < next.length; bit++, to += BLOCK_WORDS) {
+      const from = base + next[bit]!;
+      for (let i = 0; i < BLOCK_WORDS; i++) committed[to + i] = memory[from + i]!;
+    }
     for (let at = 0; at < this.#updates.length; at += 4) this.#update(base, at);
     memory.set(committed, base + this.#firstState);
   }

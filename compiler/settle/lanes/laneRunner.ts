@@ -118,10 +118,11 @@ export class LaneRunner {
   isAt(snapshot: readonly Int32Array[]): boolean {
     return snapshot.every((saved, block) => {
       const words = this.#next.stateOf(block);
-      const first = block * BLOCK_WORDS;
-      return words.every(
-        (word, i) => ((word ^ saved[i]!) & this.#running[first + (i % BLOCK_WORDS)]!) === 0,
-      );
+      const running = this.#running.subarray(block * BLOCK_WORDS);
+      for (let i = 0; i < words.length; i++) {
+        if (((words[i]! ^ saved[i]!) & running[i % BLOCK_WORDS]!) !== 0) return false;
+      }
+      return true;
     });
   }
 

@@ -10,7 +10,7 @@ text { fill: #2c3138; font: 13px system-ui, sans-serif }
 .mark { stroke: #868d96; stroke-width: 1; stroke-dasharray: 3 4 }
 .unknown { fill: #3f7d83; fill-opacity: .16 }
 .differing { fill: #b4532a; fill-opacity: .5 }
-.edge { fill: none; stroke-width: 2; stroke-linejoin: round }
+.unknown.edge, .differing.edge { fill: none; stroke-width: 2; stroke-linejoin: round }
 .unknown.edge { stroke: #3f7d83 }
 .differing.edge { stroke: #b4532a }
 @media (prefers-color-scheme: dark) {

@@ -1,5 +1,5 @@
 import type { Continuation } from '../repetition.js';
-import type { ElementReport, SettleReport, Verdict } from '../settleReport.js';
+import type { CourseReport, ElementReport, SettleReport, Verdict } from '../settleReport.js';
 import { rowOfNames, rowsByCycle, witnessRows } from './elementRows.js';
 import { counted, figure } from './figures.js';
 import { type Row, tableLines } from './tableLines.js';
@@ -23,9 +23,9 @@ const sections: Readonly<Record<Verdict, Section>> = {
     most: 12,
   },
   agreed: {
-    title: 'unknown by pessimism',
+    title: 'pessimistic x',
     meaning: (elements) =>
-      `x with three values, but the same in all lanes after ${cyclesText(latest(elements, agreedAfter))}`,
+      `x with three values, but one value in all lanes after ${cyclesText(latest(elements, agreedAfter))}`,
     rows: (elements) => rowsByCycle(elements, agreedAfter),
     most: 8,
   },
@@ -95,32 +95,42 @@ function countLines({ counts, elements }: SettleReport): string[] {
     if (count === 0) return [];
     const { title, meaning } = sections[verdict];
     const members = elements.filter((element) => element.verdict === verdict);
-    return [`${title.padEnd(LABEL)}   ${figure(count).padStart(width)}   ${meaning(members)}`];
+    return [labelled(title, `${figure(count).padStart(width)}   ${meaning(members)}`)];
   });
 }
 
 function changeLines({ unknown, differing, cycles, stimulusCycles }: SettleReport): string[] {
-  const change =
-    `the unknown bits are the same ones after ${cyclesText(unknown.unchangedAfter)}, ` +
-    `the different ones after ${figure(differing.unchangedAfter)}`;
   const held = cycles - stimulusCycles;
-  if (held === 0) return [change];
-  const areStill = unknown.held?.kind === 'still' && differing.held?.kind === 'still';
-  const lines = areStill
-    ? [
-        `all runs stand still after ${cyclesText(Math.max(unknown.held.after, differing.held.after))}`,
-      ]
-    : [
-        `the three-valued run ${heldText(unknown.held, held)}`,
-        `the lanes together ${heldText(differing.held, held)}`,
-      ];
-  return [change, ...lines.map((text) => `with the inputs held, ${text}`)];
+  return [
+    labelled('unknown bits', changeText(unknown, cycles)),
+    labelled('differing bits', changeText(differing, cycles)),
+    ...(held > 0
+      ? [labelled('inputs held', bothHeldText(unknown.held, differing.held, held))]
+      : []),
+  ];
+}
+
+const changeText = ({ unchangedAfter }: CourseReport, cycles: number): string =>
+  unchangedAfter === cycles && cycles > 0
+    ? 'change in the last cycle still'
+    : `no change after ${cyclesText(unchangedAfter)}`;
+
+function bothHeldText(
+  known: Continuation | undefined,
+  lanes: Continuation | undefined,
+  held: number,
+): string {
+  if (known?.kind === 'still' && lanes?.kind === 'still') {
+    return heldText(known.after > lanes.after ? known : lanes, held);
+  }
+  const [one, other] = [heldText(known, held), heldText(lanes, held)];
+  return one === other ? one : `three values: ${one}; lanes: ${other}`;
 }
 
 function heldText(found: Continuation | undefined, held: number): string {
-  if (found === undefined) return `did not repeat a state in ${cyclesText(held)}`;
-  if (found.kind === 'still') return `stand still after ${cyclesText(found.after)}`;
-  return `repeat their states every ${cyclesText(found.period)}`;
+  if (found === undefined) return `no state came again in ${cyclesText(held)}`;
+  if (found.kind === 'still') return `nothing moves after ${cyclesText(found.after)}`;
+  return `states come again every ${cyclesText(found.period)}`;
 }
 
 function faultLines({ faults, lanes }: SettleReport): string[] {
@@ -152,5 +162,7 @@ const latest = (
   elements: readonly ElementReport[],
   afterOf: (element: ElementReport) => number,
 ): number => elements.reduce((most, element) => Math.max(most, afterOf(element)), 0);
+
+const labelled = (label: string, content: string): string => `${label.padEnd(LABEL)}   ${content}`;
 
 const cyclesText = (cycles: number): string => counted(cycles, 'cycle');

@@ -84,6 +84,7 @@ export class ModuleBody implements OuterHost {
   placeEarly: ((instance: number) => void) | undefined;
   /** Own nets by the net of the module around this one that they stand for. */
   readonly outerNets = new Map<NetId, NetId>();
+  dependsOnPlace = false;
 
   constructor(design: Design, module: ModuleSyntax, outer: Outer | undefined) {
     this.design = design;

@@ -49,7 +49,7 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
     blocks: blockNamesOf(body, find),
     scope: body.root,
     netTypes: netTypesOf(classes, find),
-    ...(outerNets.length > 0 && { outerNets }),
+    ...(body.dependsOnPlace && { outerNets }),
   };
   const { driven } = design;
   markDriven(body, usage);

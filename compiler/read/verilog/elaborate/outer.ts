@@ -16,6 +16,8 @@ export interface Outer {
 export interface OuterHost extends ScopeHost {
   /** Undefined for the top. */
   readonly outer: Outer | undefined;
+  /** Set once a name has led above the module: it is compiled for this one place then. */
+  dependsOnPlace: boolean;
   /** Its own net that stands for a net of the module around it. */
   ownNet(outside: NetId): NetId;
 }
@@ -38,6 +40,8 @@ export function bindingAbove(host: OuterHost, path: readonly NameId[]): Binding 
   for (let outer = host.outer; outer !== undefined; outer = inner.outer) {
     if (first === outer.name) {
       const binding = inner.blocks[0]!.member(path, 1);
+      // Another instance of this module has another name.
+      if (binding !== undefined) inner.dependsOnPlace = true;
       if (binding !== undefined) return lifted(host, inner, binding);
     }
     const binding =
@@ -50,6 +54,7 @@ export function bindingAbove(host: OuterHost, path: readonly NameId[]): Binding 
 }
 
 function lifted(host: OuterHost, owner: OuterHost, binding: Binding): Binding | undefined {
+  for (let at = host; at !== owner; at = at.outer!.host) at.dependsOnPlace = true;
   return host === owner ? binding : mapBinding(binding, (net) => ownNetOf(host, owner, net));
 }
 

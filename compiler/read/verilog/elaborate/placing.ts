@@ -104,12 +104,13 @@ function placeInstance(
   const outer = { host: body, scope, name };
   const template = overrides && design.template(definition, overrides, position, outer);
   if (template === undefined || template === NO_TEMPLATE) return;
-  if (name === 0 && !isPrimitive) {
+  const hasScope = !isPrimitive || design.blackBoxes.has(definition);
+  if (name === 0 && hasScope) {
     const { start, end } = body.wordAt(position);
     const message = `the instance of module ${body.text(definition)} has no name; give it one`;
     body.report('syntax-error', message, start, end);
   }
-  const placed = { template, name: isPrimitive ? 0 : name, scope, position };
+  const placed = { template, name: hasScope ? name : 0, scope, position };
   if (extras?.range === undefined) body.placed.set(number, addChild(body, placed));
   else placeArray(body, placed, number, extras.range);
 }

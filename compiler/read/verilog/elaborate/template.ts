@@ -82,7 +82,10 @@ export interface Template {
   readonly repeats: readonly Repeat[];
   /** Empty for a primitive: its instances make no scope. */
   readonly blocks: readonly BlockNames[];
-  /** Nets that are one with nets of the module around; such a template is of one instance alone. */
+  /**
+   * Nets that are one with nets of the module around. Present where names lead there, so that the
+   * template is of one instance alone.
+   */
   readonly outerNets?: readonly OuterNet[];
   /** For hierarchical names; undefined for a primitive. */
   readonly scope: BlockScope | undefined;

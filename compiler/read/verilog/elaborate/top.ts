@@ -18,9 +18,9 @@ export function chooseTop(design: Design, wanted: string | undefined): ModuleSyn
     return undefined;
   }
   const { used, parents } = instantiations(design);
-  const roots = design.modules.filter(
-    ({ name }) => !used.has(name) && !design.blackBoxes.has(name),
-  );
+  const unused = design.modules.filter(({ name }) => !used.has(name));
+  const noBoxes = unused.filter(({ name }) => !design.blackBoxes.has(name));
+  const roots = noBoxes.length === 0 ? unused : noBoxes;
   const noCells = roots.filter((module) => !module.isCell);
   const choices = noCells.length === 0 ? roots : noCells;
   const holders = choices.filter(({ name }) => parents.has(name));

@@ -9,6 +9,8 @@ import { forEachTarget } from './expressions.js';
 import { Flag } from './symbols.js';
 import { connectionExpression, readNets } from './terminals.js';
 
+const DECLARE = 'give a file that declares the module and its ports';
+
 interface Pin extends BoxPort {
   readonly nets: readonly NetId[];
 }
@@ -26,8 +28,7 @@ export function connectUnknownBox(body: ModuleBody, scope: BlockScope, instance:
   const problem = problemOf(body, instance);
   if (problem !== undefined) {
     const { start, end } = body.wordAt(position);
-    const cure = `give a file that declares module ${name} and its ports`;
-    body.report('not-supported', `black box ${name} ${problem}; ${cure}`, start, end);
+    body.report('not-supported', `black box ${name} ${problem}`, start, end);
     return;
   }
   const pins: Pin[] = [];
@@ -48,13 +49,15 @@ export function connectUnknownBox(body: ModuleBody, scope: BlockScope, instance:
 
 function problemOf({ module }: ModuleBody, instance: number): string | undefined {
   const table = module.instances;
+  if (table.name(instance) === 0)
+    return 'has an instance without a name for its ports; give it one';
   if (table.extras(instance)?.range !== undefined) {
-    return 'has an array of instances, whose connections do not tell how wide its ports are';
+    return `has an array of instances, which does not tell how wide its ports are; ${DECLARE}`;
   }
   const end = table.connectionStart(instance + 1);
   for (let connection = table.connectionStart(instance); connection < end; connection++) {
-    const isNamed = table.connectionPort(connection) !== POSITIONAL;
-    if (!isNamed) return 'has connections by position, which do not tell its ports';
+    if (table.connectionPort(connection) !== POSITIONAL) continue;
+    return `has connections by position, which do not tell its ports; ${DECLARE}`;
   }
   return undefined;
 }

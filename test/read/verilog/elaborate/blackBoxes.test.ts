@@ -103,12 +103,18 @@ describe('black boxes', () => {
     ]);
   });
 
+  it('need a name for each instance', () => {
+    const unnamed = `primitive inv (y, a); output y; input a; table 0 : 1; 1 : 0; endtable endprimitive
+      module t (input a, output y);\n inv (y, a); endmodule`;
+    expect(boxed(unnamed, 'inv').problems).toEqual(['syntax-error inv@3']);
+  });
+
   it('must be instantiated', () => {
     const { circuit, problems, message } = boxed(text, 'ram', 'rom');
     expect(circuit).toBeUndefined();
     expect(problems).toEqual(['choice-unknown']);
     expect(message).toContain('no instance of a module rom is in the design');
-    expect(boxed('module t (input a); endmodule', 't').problems).toContain('top-unknown');
+    expect(boxed('module t (input a); endmodule', 't').problems).toEqual(['choice-unknown']);
   });
 
   it('may not have another driver on an output', () => {
@@ -151,6 +157,12 @@ describe('black boxes that no file defines', () => {
     expect(message).toContain('black box BOX has connections by position');
   });
 
+  it('need a name for each instance', () => {
+    const { problems, message } = boxed(t('BOX (.A(a)); assign y = a; assign z = b;'), 'BOX');
+    expect(problems).toContain('not-supported BOX@2');
+    expect(message).toContain('has an instance without a name');
+  });
+
   it('may not be arrays', () => {
     const { problems } = boxed(t('BOX u [1:0] (.A(b), .Q(z)); assign y = a;'), 'BOX');
     expect(problems).toContain('not-supported BOX@2');
@@ -158,7 +170,7 @@ describe('black boxes that no file defines', () => {
 
   it('may not connect a pin twice', () => {
     const { problems } = boxed(t('BOX u (.A(a),\n .A(b[0]), .Q(y), .Z(z));'), 'BOX');
-    expect(problems).toEqual(['name-redeclared A@3']);
+    expect(problems).toEqual(['name-redeclared b@3']);
   });
 
   it('are refused where the direction of a pin cannot be told', () => {
