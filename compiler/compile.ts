@@ -13,6 +13,7 @@ import { type Emitter, localEmitter } from './emit/emitter.js';
 import { buildProgram } from './passes/buildProgram.js';
 import { choosePolarity } from './passes/choosePolarity.js';
 import { compact } from './passes/compact.js';
+import { cutBlocks } from './passes/cutBlocks.js';
 import { groupRegisters } from './passes/groupRegisters/groupRegisters.js';
 import { orderNodes } from './passes/orderNodes.js';
 import { orderSinks } from './passes/orderSinks.js';
@@ -67,7 +68,7 @@ export function programsOf({ circuit, clocks, schedule, layout }: Design): Cycle
     const logic = areSeveral ? whole : compact(groupRegisters(whole));
     const order = orderNodes(logic, orderSinks(logic));
     const inverted = choosePolarity(logic, areSeveral);
-    return buildProgram(logic, order, inverted);
+    return buildProgram(logic, order, cutBlocks(logic, order), inverted);
   });
   return { programs, pattern: schedule.pattern };
 }

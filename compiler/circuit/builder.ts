@@ -4,7 +4,13 @@ import type { BusCheck, Circuit, Port } from './circuit.js';
 import { Edge } from './circuit.js';
 import { GateKind, gateInfo } from './gates.js';
 import { GrowableUint8, GrowableUint32 } from './growable.js';
-import { type Hierarchy, HierarchyBuilder, netName, primaryNames } from './hierarchy.js';
+import {
+  type Hierarchy,
+  HierarchyBuilder,
+  type NameSource,
+  netName,
+  primaryNames,
+} from './hierarchy.js';
 import { type NetId, NO_NET, netId } from './ids.js';
 import { type LatchPins, PinTable, type RegisterPins } from './pinTable.js';
 
@@ -27,7 +33,7 @@ const UNDRIVEN = 255;
  * `at` names the place in a source that the nets driven after it come from.
  */
 export class CircuitBuilder {
-  readonly hierarchy = new HierarchyBuilder();
+  readonly hierarchy: HierarchyBuilder;
   readonly extraDrivers: ExtraDriver[] = [];
   readonly #kind: GrowableUint8;
   readonly #driverStart: GrowableUint32;
@@ -47,8 +53,12 @@ export class CircuitBuilder {
   #sourceIndex = 0;
   #offset = 0;
 
-  /** Room for `expectedNets` is made at once; more than that cost some copying. */
-  constructor(expectedNets = 1024) {
+  /**
+   * Room for `expectedNets` is made at once; more than that cost some copying. `names` has the
+   * names of the scopes that are given one by number.
+   */
+  constructor(expectedNets = 1024, names?: NameSource) {
+    this.hierarchy = new HierarchyBuilder(names);
     this.#kind = new GrowableUint8(expectedNets);
     this.#driverStart = new GrowableUint32(expectedNets);
     this.#driverCount = new GrowableUint32(expectedNets);

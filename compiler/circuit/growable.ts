@@ -32,6 +32,15 @@ export class GrowableUint32 {
     this.#length = end;
   }
 
+  /** Appends the first `count` entries of a list. */
+  append(values: ArrayLike<number>, count: number): void {
+    const end = this.#length + count;
+    if (end > this.#data.length) this.#grow(end);
+    const data = this.#data;
+    for (let i = 0, to = this.#length; i < count; i++) data[to++] = values[i]!;
+    this.#length = end;
+  }
+
   /** The entries so far, as an array of just that length; the list must not be used afterwards. */
   take(): Uint32Array {
     return fitting(this.#data, this.#length) as Uint32Array;

@@ -13,10 +13,22 @@ export interface Signal {
   readonly width: number;
 }
 
+/** A list that may make its entries when they are asked for; every array is one. */
+export interface LazyList<T> extends Iterable<T> {
+  readonly length: number;
+  /** The entry at an index from 0 on; undefined beyond the end. */
+  at(index: number): T | undefined;
+}
+
+/** Names by number, from which strings are made when asked for. */
+export interface NameSource {
+  text(id: number): string;
+}
+
 /** The names that every instance of one module has. */
 export interface ModuleNames {
   readonly name: string;
-  readonly signals: readonly Signal[];
+  readonly signals: LazyList<Signal>;
   /** Sum of the signals' widths. */
   readonly bits: number;
 }
@@ -29,7 +41,7 @@ export interface ModuleNames {
 export interface Hierarchy {
   readonly modules: readonly ModuleNames[];
   /** Instance name of each scope; that of scope 0 is the top module's name. */
-  readonly scopeNames: readonly string[];
+  readonly scopeNames: LazyList<string>;
   /** Parent of each scope; 0 for scope 0. */
   readonly scopeParent: Uint32Array;
   /** Index into `modules` for each scope. */
@@ -40,14 +52,54 @@ export interface Hierarchy {
   readonly netOf: Uint32Array;
 }
 
+const OWN_TEXT = 0xffffffff;
+
+/** Names of scopes, most of them four bytes each: a netlist has a million instances. */
+class ScopeNames implements LazyList<string> {
+  readonly #source: NameSource | undefined;
+  readonly #ids = new GrowableUint32();
+  readonly #texts = new Map<number, string>();
+
+  constructor(source: NameSource | undefined) {
+    this.#source = source;
+  }
+
+  get length(): number {
+    return this.#ids.length;
+  }
+
+  /** Adds a name, as a text or by its number in the source; returns its index. */
+  push(name: string | number): number {
+    const index = this.#ids.length;
+    if (typeof name === 'string') this.#texts.set(index, name);
+    this.#ids.push(typeof name === 'string' ? OWN_TEXT : name);
+    return index;
+  }
+
+  at(index: number): string | undefined {
+    if (index < 0 || index >= this.#ids.length) return undefined;
+    const id = this.#ids.get(index);
+    return id === OWN_TEXT ? this.#texts.get(index) : this.#source?.text(id);
+  }
+
+  *[Symbol.iterator](): Iterator<string> {
+    for (let index = 0; index < this.length; index++) yield this.at(index)!;
+  }
+}
+
 /** Collects scopes in any order in which parents come before children. */
 export class HierarchyBuilder {
   readonly #modules: ModuleNames[] = [];
-  readonly #names: string[] = [];
+  readonly #names: ScopeNames;
   readonly #parent = new GrowableUint32();
   readonly #module = new GrowableUint32();
   readonly #start = new GrowableUint32();
   readonly #netOf = new GrowableUint32();
+
+  /** `source` has the names of the scopes that are given one by number. */
+  constructor(source?: NameSource) {
+    this.#names = new ScopeNames(source);
+  }
 
   /** Registers the names of a module; returns its index. */
   addModule(names: ModuleNames): number {
@@ -56,21 +108,21 @@ export class HierarchyBuilder {
 
   /**
    * Adds an instance of a module. `nets` has one net for each bit of the module's signals, in the
-   * order of `Signal.offset`. Returns the scope's index.
+   * order of `Signal.offset`; `name` is a text or a number of the source. Returns the scope's index.
    */
-  addScope(name: string, parent: number, module: number, nets: ArrayLike<number>): number {
-    const scope = this.#names.push(name) - 1;
+  addScope(name: string | number, parent: number, module: number, nets: ArrayLike<number>): number {
+    const scope = this.#names.push(name);
     this.#parent.push(parent);
     this.#module.push(module);
     this.#start.push(this.#netOf.length);
-    for (let i = 0; i < nets.length; i++) this.#netOf.push(nets[i]!);
+    this.#netOf.append(nets, nets.length);
     return scope;
   }
 
   /** The dotted path of a scope below the top; empty for the top itself. */
   path(scope: number): string {
     const parts: string[] = [];
-    for (let s = scope; s !== 0; s = this.#parent.get(s)) parts.push(this.#names[s]!);
+    for (let s = scope; s !== 0; s = this.#parent.get(s)) parts.push(this.#names.at(s)!);
     return parts.reverse().join('.');
   }
 
@@ -89,7 +141,8 @@ export class HierarchyBuilder {
 /** The dotted path of a scope below the top, as IEEE 1364 writes it; empty for the top itself. */
 export function scopePath(hierarchy: Hierarchy, scope: number): string {
   const parts: string[] = [];
-  for (let s = scope; s !== 0; s = hierarchy.scopeParent[s]!) parts.push(hierarchy.scopeNames[s]!);
+  for (let s = scope; s !== 0; s = hierarchy.scopeParent[s]!)
+    parts.push(hierarchy.scopeNames.at(s)!);
   return parts.reverse().join('.');
 }
 
@@ -138,10 +191,10 @@ function signalAt(module: ModuleNames, bit: number): Signal {
   let high = module.signals.length - 1;
   while (low < high) {
     const middle = (low + high + 1) >> 1;
-    if (module.signals[middle]!.offset <= bit) low = middle;
+    if (module.signals.at(middle)!.offset <= bit) low = middle;
     else high = middle - 1;
   }
-  return module.signals[low]!;
+  return module.signals.at(low)!;
 }
 
 /** The name of a net, or `net 17` where it has none. */

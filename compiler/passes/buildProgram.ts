@@ -9,20 +9,26 @@ import {
 import { FIRST_INPUT, type Program, ProgramOp } from '../program/program.js';
 
 /**
- * Operations in one block. 300 to 2,000 run equally fast; beyond some 6,000 the optimizing tier of
- * a WebAssembly engine may fall back to a weaker register allocator.
- */
-const BLOCK_SIZE = 700;
-
-/**
  * Writes a logic graph as a program: the operations of `order`, each in the polarity chosen, with
- * inversions where a reader needs the other one, cut into blocks.
+ * inversions where a reader needs the other one, a new block at each place of `blockStarts`.
  *
  * An inversion is made once per block, so that it never travels between blocks.
  */
-export function buildProgram(logic: Logic, order: Uint32Array, inverted: Uint8Array): Program {
+export function buildProgram(
+  logic: Logic,
+  order: Uint32Array,
+  blockStarts: readonly number[],
+  inverted: Uint8Array,
+): Program {
   const writer = new ProgramWriter(logic, inverted);
-  for (const node of order) writer.write(node);
+  let block = 1;
+  for (const [place, node] of order.entries()) {
+    if (place === blockStarts[block]) {
+      writer.startBlock();
+      block++;
+    }
+    writer.write(node);
+  }
   return writer.finish();
 }
 
@@ -73,10 +79,10 @@ class ProgramWriter {
     } else {
       this.#writeMux(node, kept);
     }
-    const count = this.#op.length;
-    if (count - this.#blockStart.get(this.#blockStart.length - 1) >= BLOCK_SIZE) {
-      this.#blockStart.push(count);
-    }
+  }
+
+  startBlock(): void {
+    this.#blockStart.push(this.#op.length);
   }
 
   finish(): Program {

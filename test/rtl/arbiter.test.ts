@@ -73,13 +73,14 @@ describe('the arbiter', () => {
 });
 
 describe('the bus', () => {
-  it('carries the data of whoever has it', async () => {
+  it('carries the data of whoever has it, by and-or and by drivers that let go', async () => {
     const design = rtlDesign(
       ['arbiter.v'],
       `module system (input clk, rst_n, input [2:0] request, input [26:0] data,
-                      output [2:0] grant, output [8:0] bus);
+                      output [2:0] grant, output [8:0] bus, shared);
          arbiter #(3) who (clk, rst_n, request, grant);
          bus_mux #(.N(3), .W(9)) what (.grant(grant), .data(data), .bus(bus));
+         bus_drivers #(3, 9) same (grant, data, shared);
        endmodule`,
     );
     const system = (): Model => {
@@ -87,7 +88,9 @@ describe('the bus', () => {
       return ({ rst_n, request, data }) => {
         const grant = step(request!, !rst_n);
         const owner = Math.log2(grant);
-        return { grant, bus: grant === 0 ? 0 : (data! >> (9 * owner)) & 511 };
+        if (grant === 0) return { grant, bus: 0 };
+        const bus = (data! >> (9 * owner)) & 511;
+        return { grant, bus, shared: bus };
       };
     };
     const rows = randomInputs(design, 5, 500, (_, chance, cycle) => ({

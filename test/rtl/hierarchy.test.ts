@@ -10,7 +10,7 @@ const datapath = (): Model => {
   let line = [0, 0, 0];
   return ({ rst_n, x, c, mode }) => {
     const inputs = state.map((_, lane) => (x! >> (lane * W)) & mask);
-    const bias = (lane: number) => 2 * lane + 1;
+    const bias = (lane: number) => (lane === 2 ? 13 : 2 * lane + 1);
     if (!rst_n) [state[1], state[2]] = [bias(1), 0];
     const values = inputs.map((a, lane) =>
       lane % 3 === 0 ? (a + c! + bias(lane)) & mask : state[lane]!,

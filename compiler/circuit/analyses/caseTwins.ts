@@ -23,12 +23,12 @@ function signalTwins(hierarchy: Hierarchy): CaseTwins[] {
   return modules.flatMap(({ signals }, module) => {
     const scope = firstScope[module]!;
     if (scope < 0) return [];
-    const placed = (i: number): number => scopeStart[scope]! + signals[i]!.offset;
+    const placed = (i: number): number => scopeStart[scope]! + signals.at(i)!.offset;
     const nameOf = (i: number): string => {
       const name = nameAt(hierarchy, placed(i));
-      return signals[i]!.isVector ? name.slice(0, name.lastIndexOf('[')) : name;
+      return signals.at(i)!.isVector ? name.slice(0, name.lastIndexOf('[')) : name;
     };
-    return twinsAmong(signals.length, (i) => signals[i]!.name).map(([first, second]) => ({
+    return twinsAmong(signals.length, (i) => signals.at(i)!.name).map(([first, second]) => ({
       first: nameOf(first),
       second: nameOf(second),
       net: netOf[placed(second)]!,
@@ -38,7 +38,7 @@ function signalTwins(hierarchy: Hierarchy): CaseTwins[] {
 
 function scopeTwins(hierarchy: Hierarchy): CaseTwins[] {
   const { scopeNames, scopeParent } = hierarchy;
-  const twins = twinsAmong(scopeNames.length, (s) => scopeNames[s]!, scopeParent);
+  const twins = twinsAmong(scopeNames.length, (s) => scopeNames.at(s)!, scopeParent);
   return twins
     .filter(([first]) => first !== 0)
     .map(([first, second]) => ({

@@ -34,7 +34,7 @@ function blockModules({ modules, scopeNames, scopeModule }: Hierarchy): Uint8Arr
   isBlock[scopeModule[0]!] = 0;
   for (let scope = 1; scope < scopeModule.length; scope++) {
     const module = scopeModule[scope]!;
-    const isNamedAlike = scopeNames[scope] === modules[module]!.name;
+    const isNamedAlike = scopeNames.at(scope) === modules[module]!.name;
     if (!isNamedAlike || scopeModule[scope - 1] !== module - 1) isBlock[module] = 0;
   }
   return isBlock;

@@ -59,7 +59,7 @@ function driver(circuit: Circuit, name: string): { kind: number; fanin: number[]
 }
 
 function netOf(circuit: Circuit, name: string): number {
-  const signal = circuit.hierarchy.modules[0]!.signals.find((each) => each.name === name);
+  const signal = [...circuit.hierarchy.modules[0]!.signals].find((each) => each.name === name);
   return circuit.hierarchy.netOf[signal!.offset]!;
 }
 
@@ -84,7 +84,7 @@ describe('readBench', () => {
     expect([...registers.initial]).toEqual([2, 2, 2]);
     const circuit = accepted(s27);
     expect([...registers.output]).toEqual(['G5', 'G6', 'G7'].map((name) => netOf(circuit, name)));
-    expect(hierarchy.scopeNames).toEqual(['c']);
+    expect([...hierarchy.scopeNames]).toEqual(['c']);
   });
 
   it('adds no clock where there is no flip-flop', () => {

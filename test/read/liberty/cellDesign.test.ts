@@ -66,7 +66,7 @@ describe('a Liberty cell in a Verilog netlist', () => {
       ]),
     );
     const { hierarchy } = circuit;
-    const signals = hierarchy.modules[hierarchy.scopeModule[1]!]!.signals;
+    const signals = [...hierarchy.modules[hierarchy.scopeModule[1]!]!.signals];
     const names = signals.map((signal) => bitName(hierarchy, 1, signal, 0));
     expect(names).toEqual(['f.D', 'f.CK', 'f.Q', 'f.QN', 'f.IQ']);
     const [state] = netsOf(circuit, 'f.IQ');

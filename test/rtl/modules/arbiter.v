@@ -71,3 +71,17 @@ module bus_mux #(parameter N = 4, W = 8) (
   endfunction
   assign bus = selected(grant, data);
 endmodule
+
+// Masters put their data on the bus by drivers that let go of it.
+module bus_drivers #(parameter N = 4, W = 8) (
+  input  [N-1:0]   grant,
+  input  [N*W-1:0] data,
+  output [W-1:0]   bus
+);
+  genvar n;
+  generate
+    for (n = 0; n < N; n = n + 1) begin : master
+      assign bus = grant[n] ? data[n*W +: W] : {W{1'bz}};
+    end
+  endgenerate
+endmodule

@@ -22,6 +22,8 @@ module hierarchy #(parameter LANES = 4, W = 6) (
       defparam u.BIAS = 2 * i + 1;
     end
   endgenerate
+  // The last one in the text wins.
+  defparam lane[2].u.BIAS = 13;
   assign lanes = y;
 
   tree #(.N(LANES), .W(W)) sum (y, total);

@@ -1,14 +1,14 @@
-import type { Signal } from '../../../circuit/hierarchy.js';
 import type { BlockScope } from './blockScope.js';
 import type { ModuleBody } from './body.js';
+import { SignalTable } from './signalTable.js';
 import { Flag, SymbolKind } from './symbols.js';
 import type { BlockNames } from './template.js';
 
 /** The names of a module and of the blocks inside it, with the nets behind them. */
 export function blockNamesOf(body: ModuleBody, find: (net: number) => number): BlockNames[] {
   return body.blocks.map((block) => {
-    const collector = new NameCollector(bitsOf(block), find);
-    collectSignals(body, block, collector);
+    const collector = new NameCollector(body, block, find);
+    collector.collect();
     const { signals, nets } = collector;
     const name = body.text(block.name);
     return {
@@ -22,30 +22,51 @@ export function blockNamesOf(body: ModuleBody, find: (net: number) => number): B
 }
 
 class NameCollector {
-  readonly signals: Signal[] = [];
+  readonly signals: SignalTable;
   readonly nets: Uint32Array;
+  readonly #body: ModuleBody;
+  readonly #block: BlockScope;
   readonly #find: (net: number) => number;
-  #offset = 0;
 
-  constructor(bits: number, find: (net: number) => number) {
-    this.nets = new Uint32Array(bits);
+  constructor(body: ModuleBody, block: BlockScope, find: (net: number) => number) {
+    this.signals = new SignalTable(body.names.texts);
+    this.nets = new Uint32Array(bitsOf(block));
+    this.#body = body;
+    this.#block = block;
     this.#find = find;
   }
 
-  /** Adds a signal, or a word of a memory, whose nets begin at `first`. */
-  add(name: string, { symbols }: BlockScope, symbol: number, first: number): void {
+  collect(): void {
+    const { symbols } = this.#block;
+    for (let symbol = 0; symbol < symbols.count; symbol++) {
+      const kind = symbols.kind(symbol);
+      if (kind === SymbolKind.Signal) this.#add(symbol, symbols.value(symbol));
+      else if (kind === SymbolKind.Memory) this.#addWords(symbol);
+    }
+  }
+
+  #addWords(symbol: number): void {
+    const { symbols, memories } = this.#block;
+    const { first, low, high } = memories[symbols.value(symbol)]!;
+    const name = this.#body.text(symbols.name(symbol));
     const width = symbols.width(symbol);
-    const offset = this.#offset;
-    this.signals.push({
-      name,
-      msb: symbols.msb(symbol),
-      lsb: symbols.lsb(symbol),
-      isVector: (symbols.flags(symbol) & Flag.Vector) !== 0,
-      offset,
-      width,
-    });
-    for (let bit = 0; bit < width; bit++) this.nets[offset + bit] = this.#find(first + bit);
-    this.#offset += width;
+    for (let address = low; address <= high; address++) {
+      this.#add(symbol, first + (address - low) * width, `${name}[${address}]`);
+    }
+  }
+
+  /** Adds a signal, or a word of a memory, whose nets begin at `first`. */
+  #add(symbol: number, first: number, text?: string): void {
+    const { symbols } = this.#block;
+    const { signals, nets } = this;
+    const offset = signals.bits;
+    const isVector = (symbols.flags(symbol) & Flag.Vector) !== 0;
+    if (!isVector && text === undefined) signals.pushScalar(symbols.name(symbol));
+    else {
+      const shape = { msb: symbols.msb(symbol), lsb: symbols.lsb(symbol), isVector };
+      signals.push(symbols.name(symbol), shape, text);
+    }
+    for (let at = offset; at < signals.bits; at++) nets[at] = this.#find(first + at - offset);
   }
 }
 
@@ -59,24 +80,6 @@ function bitsOf({ symbols, memories }: BlockScope): number {
     bits += (high - low + 1) * symbols.width(symbol);
   }
   return bits;
-}
-
-function collectSignals(body: ModuleBody, block: BlockScope, collector: NameCollector): void {
-  const { symbols, memories } = block;
-  for (let symbol = 0; symbol < symbols.count; symbol++) {
-    const kind = symbols.kind(symbol);
-    const value = symbols.value(symbol);
-    if (kind === SymbolKind.Signal) {
-      collector.add(body.text(symbols.name(symbol)), block, symbol, value);
-    } else if (kind === SymbolKind.Memory) {
-      const { first, low, high } = memories[value]!;
-      const name = body.text(symbols.name(symbol));
-      const width = symbols.width(symbol);
-      for (let address = low; address <= high; address++) {
-        collector.add(`${name}[${address}]`, block, symbol, first + (address - low) * width);
-      }
-    }
-  }
 }
 
 /** `[3:0]` for a run of bits counted from the right, else `[7]`, `[5]` and so on. */

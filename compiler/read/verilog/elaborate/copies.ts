@@ -2,7 +2,6 @@ import { PartKind, unpackTraits } from '../../../circuit/busParts.js';
 import { NO_NET } from '../../../circuit/ids.js';
 import type { ModuleBody } from './body.js';
 import { BUS_PART, BusPin } from './recording.js';
-import { Drive } from './template.js';
 import type { Usage } from './usage.js';
 
 /**
@@ -16,14 +15,16 @@ export function handOnFloating({ builder, copies }: ModuleBody, usage: Usage): b
   for (let i = 0; i < copies.length; i++) {
     const driver = copies.get(i);
     const data = builder.find(builder.faninAt(builder.faninStart(driver)));
-    if (usage.driveOf(data) === Drive.Shared) pending.push(driver);
+    if (usage.mayFloat(data)) pending.push(driver);
     else if (!byData.has(data)) byData.set(data, [driver]);
     else byData.get(data)!.push(driver);
   }
   const isAny = pending.length > 0;
   for (let driver = pending.pop(); driver !== undefined; driver = pending.pop()) {
     const output = builder.find(builder.driverOutput(driver));
+    const isOnlyGate = builder.driverKind(driver) !== BUS_PART && usage.drivers[output] === 1;
     makeCopy(builder, driver);
+    if (!isOnlyGate && usage.drivers[output] !== 0) continue;
     pending.push(...(byData.get(output) ?? []));
     byData.delete(output);
   }

@@ -77,9 +77,9 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
     );
   }
   if (design.diagnostics.hasErrors) return undefined;
-  const builder = new CircuitBuilder(expectedNets(design, top));
+  const builder = new CircuitBuilder(expectedNets(design, top), design.names.texts);
   for (const source of design.sources.sources) builder.addSource(source);
-  const stamper = new Stamper(builder, design.templates, design.names);
+  const stamper = new Stamper(builder, design.templates);
   const boundary = stamper.stamp(top);
   addTopPorts(builder, design, top, boundary);
   addBoxPorts(builder, design, stamper.boxes);

@@ -1,7 +1,7 @@
 import type { CircuitBuilder } from '../../../circuit/builder.js';
 import { GateKind } from '../../../circuit/gates.js';
 import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
-import type { NameTable } from '../../names.js';
+import type { NameId } from '../../names.js';
 import { BUS_PART, BusPin, DROPPED, type Origin, Pin, unpackAttributes } from './recording.js';
 import type { Template } from './template.js';
 
@@ -36,7 +36,6 @@ interface Frame {
 export class Stamper {
   readonly #builder: CircuitBuilder;
   readonly #templates: readonly Template[];
-  readonly #names: NameTable;
   // One frame per level of hierarchy, kept for the next instance on that level.
   readonly #frames: Frame[] = [];
   // Lists of each length that gates are handed over in, so that none is made per gate.
@@ -46,10 +45,10 @@ export class Stamper {
   /** The black boxes stamped so far. */
   readonly boxes: PlacedBox[] = [];
 
-  constructor(builder: CircuitBuilder, templates: readonly Template[], names: NameTable) {
+  /** The names of instances must be those that `builder` was made with. */
+  constructor(builder: CircuitBuilder, templates: readonly Template[]) {
     this.#builder = builder;
     this.#templates = templates;
-    this.#names = names;
   }
 
   /** Stamps the top; returns the circuit's nets of its boundary. */
@@ -81,9 +80,7 @@ export class Stamper {
     for (const { childNet, net } of children.imports(child)) nets[childNet] = parent.nets[net]!;
     this.#fill(frame);
     const name = children.name(child);
-    if (name !== 0) {
-      this.#addScopes(frame, this.#names.text(name), parent.scopes[children.block(child)]!);
-    }
+    if (name !== 0) this.#addScopes(frame, name, parent.scopes[children.block(child)]!);
     if (template.isBox) this.#addBox(parent, child, frame);
     return template.children.count > 0;
   }
@@ -147,9 +144,7 @@ export class Stamper {
     const output = netId(nets[recording.driverOutput(driver)]!);
     const start = recording.faninStart(driver);
     if (kind === GateKind.Register || kind === GateKind.Latch) {
-      this.#driveState(kind, output, this.#translated(recording, nets, start, Pin.Attributes), {
-        ...unpackAttributes(recording.faninAt(start + Pin.Attributes)),
-      });
+      this.#driveState(recording, driver, output, nets);
       return;
     }
     if (kind === BUS_PART) {
@@ -163,22 +158,23 @@ export class Stamper {
   }
 
   #driveState(
-    kind: number,
+    recording: Template['recording'],
+    driver: number,
     output: NetId,
-    pins: readonly NetId[],
-    attributes: ReturnType<typeof unpackAttributes>,
+    nets: Uint32Array,
   ): void {
+    const start = recording.faninStart(driver);
+    const pins = this.#translated(recording, nets, start, Pin.Attributes);
+    const { edge, priority, initial } = unpackAttributes(recording.faninAt(start + Pin.Attributes));
     const control = pins[Pin.Control]!;
-    const common = {
-      output,
-      data: pins[Pin.Data]!,
-      set: pins[Pin.Set]!,
-      reset: pins[Pin.Reset]!,
-      priority: attributes.priority,
-      initial: attributes.initial,
-    };
-    if (kind === GateKind.Latch) this.#builder.latch({ ...common, enable: control });
-    else this.#builder.register({ ...common, clock: control, edge: attributes.edge });
+    const data = pins[Pin.Data]!;
+    const set = pins[Pin.Set]!;
+    const reset = pins[Pin.Reset]!;
+    if (recording.driverKind(driver) === GateKind.Latch) {
+      this.#builder.latch({ output, enable: control, data, set, reset, priority, initial });
+    } else {
+      this.#builder.register({ output, clock: control, edge, data, set, reset, priority, initial });
+    }
   }
 
   /** A stretch of the fan-in list in nets of the circuit; overwritten by the next call. */
@@ -198,7 +194,7 @@ export class Stamper {
   }
 
   /** Adds a scope for an instance and one for each block inside it. */
-  #addScopes({ template, nets, scopes }: Frame, name: string, parent: number): void {
+  #addScopes({ template, nets, scopes }: Frame, name: NameId | string, parent: number): void {
     const { hierarchy } = this.#builder;
     const { blocks } = template;
     let module = this.#modules.get(template);

@@ -1,4 +1,4 @@
-import { isWeak, PartKind, unpackTraits } from '../../../circuit/busParts.js';
+import { isWeak, PartKind, Strength, unpackTraits } from '../../../circuit/busParts.js';
 import { GateKind } from '../../../circuit/gates.js';
 import { type NetId, NO_NET } from '../../../circuit/ids.js';
 import type { Children } from './children.js';
@@ -7,6 +7,8 @@ import { Drive, type Template } from './template.js';
 
 const SHARED = 1;
 const WEAK = 2;
+/** Set beside one of the others for a driver that is always on. */
+const STEADY = 4;
 
 /** Who drives and who reads each net of a module, its instances included. */
 export class Usage {
@@ -43,7 +45,18 @@ export class Usage {
     const root = this.#recording.find(net);
     if (this.drivers[root]! > 0) return this.wired.has(root) ? Drive.Shared : Drive.Full;
     if ((this.#others[root]! & SHARED) !== 0) return Drive.Shared;
-    return this.#others[root] === WEAK ? Drive.Weak : Drive.None;
+    return (this.#others[root]! & WEAK) !== 0 ? Drive.Weak : Drive.None;
+  }
+
+  /** Puts on record that a net has a driver that always is on. */
+  keepDriven(net: NetId): void {
+    this.#others[this.#recording.find(net)]! |= STEADY;
+  }
+
+  /** Whether a net has drivers, but none that always is on. */
+  mayFloat(net: NetId): boolean {
+    const root = this.#recording.find(net);
+    return this.drivers[root] === 0 && (this.#others[root]! & (SHARED | STEADY)) === SHARED;
   }
 
   /** Whether a net has anything but full drivers. */
@@ -110,7 +123,12 @@ function countDriver(recording: Recording, driver: number, usage: Usage): void {
   }
   const start = recording.faninStart(driver);
   const traits = recording.faninAt(start + BusPin.Traits);
-  const isTwoWay = unpackTraits(traits).kind === PartKind.TwoWay;
+  const { kind: part, zero, one } = unpackTraits(traits);
+  const isTwoWay = part === PartKind.TwoWay;
+  const isAlwaysOn = recording.faninAt(start + BusPin.Control) === NO_NET;
+  if (part === PartKind.Driver && isAlwaysOn && Math.min(zero, one) > Strength.HighZ) {
+    usage.keepDriven(output);
+  }
   usage.drive(output, isTwoWay || isWeak(traits) ? Drive.Weak : Drive.Shared);
   if (!isTwoWay) return;
   usage.drive(recording.faninAt(start + BusPin.Data), Drive.Weak);

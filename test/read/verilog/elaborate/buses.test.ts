@@ -121,6 +121,12 @@ describe('assignments of z', () => {
     expect(column(text, ['e', 'f', 'a', 'b'])).toBe('xxxx' + '0101' + '0011' + '0xx1');
   });
 
+  it('do not make buses of what is assigned from a net that always is driven', () => {
+    const text = `module t (input a, b, output y); supply0 g; wand w; buf (w, a), (w, b);
+      assign y = g;\n assign y = w; endmodule`;
+    expect(reading(text).problems).toEqual(['net-multiply-driven y@2']);
+  });
+
   it('are x to every gate', () => {
     const text = `module t (input e, d, output y); wire n = e ? d : 1'bz; assign y = ~n; endmodule`;
     expect(column(text, ['e', 'd'])).toBe('xx10');

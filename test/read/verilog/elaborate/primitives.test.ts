@@ -61,7 +61,7 @@ describe('combinational primitives', () => {
       module c4 (input [3:0] a, input b, output [3:0] q); p #2 u [3:0] (q, a, b); endmodule
       module t (input [3:0] a, input b, output [3:0] q); c4 c (a, b, q); endmodule`);
     expect(signalValue(circuit, 'q', { a: 9, b: 1 })).toBe(9);
-    expect(circuit.hierarchy.scopeNames).toEqual(['t', 'c']);
+    expect([...circuit.hierarchy.scopeNames]).toEqual(['t', 'c']);
   });
 });
 

@@ -259,6 +259,19 @@ describe('nets', () => {
     ).toEqual(['net-multiply-driven a@1']);
   });
 
+  it('of a supply may not have a gate as a driver too', () => {
+    const text = 'module t (input a, output y);\n supply1 n;\n not (n, a); buf (y, n); endmodule';
+    expect(problemsOf(text)).toEqual(['net-multiply-driven not@3']);
+    expect(relatedOf(text)).toEqual(['n@2']);
+  });
+
+  it('with a tri-state driver may have one gate beside it, not two', () => {
+    const t = (gates: string): string =>
+      `module t (input a, b, output y);\n bufif1 (y, a, b);\n ${gates} endmodule`;
+    expect(problemsOf(t('not (y, a);'))).toEqual([]);
+    expect(problemsOf(t('not (y, a), (y, b);'))).toEqual(['net-multiply-driven (@3']);
+  });
+
   it('of inout ports that are driven inside the top become outputs', () => {
     const text = 'module t (input a,\n inout y); buf (y, a); endmodule';
     expect(problemsOf(text)).toEqual(['inout-as-output y@2']);

@@ -52,7 +52,7 @@ export function netsOf(circuit: Circuit, path: string): number[] {
 
 /** Paths of all scopes below the top. */
 export function scopesOf({ hierarchy }: Circuit): string[] {
-  return hierarchy.scopeNames.map((_, scope) => scopePath(hierarchy, scope)).slice(1);
+  return Array.from(hierarchy.scopeNames, (_, scope) => scopePath(hierarchy, scope)).slice(1);
 }
 
 /** Names of the kinds of all gates, sorted. */

@@ -150,7 +150,7 @@ describe('elaborate', () => {
     );
     expect(portsOf(circuit.inputs)).toEqual(['a[0:3]', 'b[7:4]', 'c']);
     expect(portsOf(circuit.outputs)).toEqual(['y[-1:2]']);
-    const signal = circuit.hierarchy.modules[0]!.signals.find(({ name }) => name === 'b')!;
+    const signal = [...circuit.hierarchy.modules[0]!.signals].find(({ name }) => name === 'b')!;
     expect(signal).toMatchObject({ msb: 7, lsb: 4, isVector: true, width: 4 });
   });
 

@@ -1,0 +1,72 @@
+import { GrowableUint32 } from '../../../circuit/growable.js';
+import type { LazyList, NameSource, Signal } from '../../../circuit/hierarchy.js';
+import type { NameId } from '../../names.js';
+
+/** What few signals have. */
+interface Rarity {
+  readonly msb: number;
+  readonly lsb: number;
+  readonly isVector: boolean;
+  /** Of a word of a memory. */
+  readonly name: string | undefined;
+}
+
+/** The signals of a module in order: eight bytes for each scalar, of which there are a million. */
+export class SignalTable implements LazyList<Signal> {
+  readonly #names: NameSource;
+  readonly #name = new GrowableUint32(4);
+  readonly #offset = new GrowableUint32(4);
+  readonly #rarities = new Map<number, Rarity>();
+  #bits = 0;
+
+  constructor(names: NameSource) {
+    this.#names = names;
+  }
+
+  get length(): number {
+    return this.#name.length;
+  }
+
+  /** Sum of the widths so far. */
+  get bits(): number {
+    return this.#bits;
+  }
+
+  /** Adds a scalar. */
+  pushScalar(name: NameId): void {
+    this.#name.push(name);
+    this.#offset.push(this.#bits++);
+  }
+
+  /** Adds any signal; `text` where its name is not the text of `name`. */
+  push(
+    name: NameId,
+    shape: { readonly msb: number; readonly lsb: number; readonly isVector: boolean },
+    text?: string,
+  ): void {
+    const { msb, lsb, isVector } = shape;
+    this.#rarities.set(this.length, { msb, lsb, isVector, name: text });
+    this.#name.push(name);
+    this.#offset.push(this.#bits);
+    this.#bits += Math.abs(msb - lsb) + 1;
+  }
+
+  at(index: number): Signal | undefined {
+    if (index < 0 || index >= this.length) return undefined;
+    const { msb, lsb, isVector, name } = this.#rarities.get(index) ?? scalar;
+    return {
+      name: name ?? this.#names.text(this.#name.get(index)),
+      msb,
+      lsb,
+      isVector,
+      offset: this.#offset.get(index),
+      width: Math.abs(msb - lsb) + 1,
+    };
+  }
+
+  *[Symbol.iterator](): Iterator<Signal> {
+    for (let index = 0; index < this.length; index++) yield this.at(index)!;
+  }
+}
+
+const scalar: Rarity = { msb: 0, lsb: 0, isVector: false, name: undefined };
