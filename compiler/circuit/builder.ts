@@ -162,8 +162,8 @@ export class CircuitBuilder {
 
   /**
    * Adds something that drives a net part of the time or weakly; `traits` is what `packTraits`
-   * makes, `control` is `NO_NET` for always. The net has no other driver because of it until
-   * `resolveBuses` is called.
+   * makes, `control` is `NO_NET` for always. It counts as a driver of the net only once
+   * `resolveBuses` has made gates of it.
    */
   busPart(net: NetId, data: NetId, control: NetId, traits: number): void {
     const { sourceIndex, offset } = this.#place();

@@ -5,7 +5,7 @@ import { PolarityEdges } from './polarityEdges.js';
 const CASCADE_LIMIT = 64;
 /** Node turns spent on one circuit: some tenths of a second. */
 const BUDGET = 2_000_000;
-const MOST_SWEEPS = 400;
+const MOST_SWEEPS = 200;
 /** Sweeps of plain descent, before and after the others. */
 const DESCENT = 12;
 /** At first a move that costs one inversion is kept in about half of the cases. */

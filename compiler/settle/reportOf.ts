@@ -19,6 +19,8 @@ export interface ReportContext {
   readonly lanes: number;
   readonly seed: number | bigint;
   readonly notes?: readonly string[];
+  /** How many of the last cycles count as the end, where no state has come again; default 1. */
+  readonly endCycles?: number;
 }
 
 /** The report on a run that is over. */
@@ -27,7 +29,7 @@ export function reportOf(design: Design, run: SettleRun, context: ReportContext)
   const { stimulusCycles, lanes, notes = [] } = context;
   const seedOf = (lane: number): string =>
     BigInt.asUintN(64, BigInt(context.seed) + BigInt(lane)).toString();
-  const elements = elementsOf(design, run);
+  const elements = elementsOf(design, run, context.endCycles ?? 1);
   const counts = verdicts.map((verdict) => [
     verdict,
     elements.filter((element) => element.verdict === verdict).length,
@@ -61,13 +63,17 @@ const courseReport = ({ changedAfter, steps }: MemberCourse, { found }: Seen): C
   ...(found && { held: found }),
 });
 
-function elementsOf({ circuit, layout }: Design, run: SettleRun): ElementReport[] {
+function elementsOf(
+  { circuit, layout }: Design,
+  run: SettleRun,
+  endCycles: number,
+): ElementReport[] {
   const { registers, latches } = circuit;
   const lane = run.runner.firstRunning;
   const laneState = lane < 0 ? undefined : run.runner.stateOf(lane);
   const areCompared = run.runner.lanes - run.runner.faults.length > 1;
-  const unknownFrom = lastPeriod(run, run.unknownRepetition);
-  const differingFrom = lastPeriod(run, run.laneRepetition);
+  const unknownFrom = startOfEnd(run, run.unknownRepetition, endCycles);
+  const differingFrom = startOfEnd(run, run.laneRepetition, endCycles);
   return layout.stateNames.map((name, element): ElementReport => {
     const isLoop = element >= registers.count + latches.count;
     const kind = isLoop ? 'loop' : element >= registers.count ? 'latch' : 'register';
@@ -86,10 +92,10 @@ function elementsOf({ circuit, layout }: Design, run: SettleRun): ElementReport[
   });
 }
 
-// The number of cycles from which on to look at what is so at the end: it is not the same at every
-// end, where a state comes and goes.
-function lastPeriod({ cycles }: SettleRun, { found }: Seen): number {
-  return found?.kind === 'repeats' ? cycles - found.period + 1 : cycles;
+// What comes and goes is not the same at every end: where a state repeats, a period is looked at.
+function startOfEnd({ cycles }: SettleRun, { found }: Seen, endCycles: number): number {
+  const length = found === undefined ? endCycles : found.kind === 'repeats' ? found.period : 1;
+  return cycles - length + 1;
 }
 
 function powerUpsOf(

@@ -55,7 +55,9 @@ export async function settleDesign(design: Design, request: SettleRequest): Prom
       run.run(row, 0, run.cycles > 0);
       progress.update(run.cycles);
     }
-    return reportOf(design, run, { ...request, stimulusCycles });
+    const isRestless = cycles === undefined && run.cycles - stimulusCycles === MOST_HELD_CYCLES;
+    const endCycles = isRestless ? QUIET_CYCLES : 1;
+    return reportOf(design, run, { ...request, stimulusCycles, endCycles });
   } finally {
     progress.clear();
   }

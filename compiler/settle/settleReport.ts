@@ -60,7 +60,8 @@ export interface LanePowerUp {
  * What a stimulus makes of an unknown power-up; printed as it stands by `settle --json`.
  *
  * Numbers of cycles count from 0, the power-up itself. "The end" is the state after the last
- * cycle, or, where the states were seen to repeat with the inputs held, the whole last period.
+ * cycle, or, where the states were seen to repeat with the inputs held, the whole last period, or,
+ * where a run was given up because bits went on changing, its last 256 cycles.
  */
 export interface SettleReport {
   readonly circuit: string;

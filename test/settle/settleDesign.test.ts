@@ -75,9 +75,8 @@ function bruteForce(design: Design, stimulus: readonly StimulusBlock[], cycles: 
     }
     if (agreedAfter > cycles) return { name, verdict: 'powerUp' };
     if (knownAfter <= cycles) return { name, verdict: 'known', knownAfter, agreedAfter };
-    const left = courses.filter((states) => states.length > cycles).length;
-    // Two lanes may stand for one power-up, so that there may be enough of them.
-    return { name, verdict: left > 0 ? 'agreed' : 'undecided', agreedAfter };
+    const isAnyLeft = courses.some((states) => states.length > cycles);
+    return isAnyLeft ? { name, verdict: 'agreed', agreedAfter } : { name, verdict: 'undecided' };
   });
 }
 
@@ -86,7 +85,7 @@ const wordsOf = (report: SettleReport) =>
     name,
     verdict,
     ...(verdict === 'known' && { knownAfter }),
-    ...(verdict !== 'powerUp' && { agreedAfter }),
+    ...((verdict === 'known' || verdict === 'agreed') && { agreedAfter }),
   }));
 
 const small = { maxRegisters: 5, maxGates: 14, maxInputs: 2, latches: false } as const;
@@ -111,14 +110,14 @@ describe('a report', () => {
       }),
       { seed: SEED, numRuns: 60 },
     );
-    expect([...seen].sort()).toEqual(['agreed', 'known', 'powerUp']);
+    expect([...seen].sort()).toEqual(['agreed', 'known', 'powerUp', 'undecided']);
   });
 
   it('has witnesses that engines confirm from the seeds and from the power-ups it gives', async () => {
     let confirmed = 0;
     await fc.assert(
       fc.asyncProperty(
-        randomCircuit({ asynchronous: true, latches: true }),
+        randomCircuit({ maxRegisters: 20, latches: true }),
         fc.bigInt({ min: 0n, max: (1n << 64n) - 1n }),
         async (circuit, seed) => {
           const design = designOf(circuit);
@@ -146,7 +145,7 @@ describe('a report', () => {
           });
         },
       ),
-      { seed: SEED + 1, numRuns: 15 },
+      { seed: SEED + 1, numRuns: 40 },
     );
     expect(confirmed).toBeGreaterThan(20);
   });

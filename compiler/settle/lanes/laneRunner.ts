@@ -29,6 +29,8 @@ export class LaneRunner {
   readonly #pattern: Uint8Array;
   /** State bit of each element that tells its value, and whether it is kept inverted. */
   readonly #bitOf: Int32Array;
+  /** State bits that are not there to fill a group of neighbours. */
+  readonly #meaningful: Uint32Array;
   /** Per word of 32 lanes, a 1 for each lane that goes on. */
   readonly #running: Int32Array;
 
@@ -55,6 +57,9 @@ export class LaneRunner {
     this.#map.states.forEach(({ role, index }, bit) => {
       if (role === 'value') this.#bitOf[index] = bit;
     });
+    this.#meaningful = Uint32Array.from(this.#map.states.keys()).filter(
+      (bit) => this.#map.states[bit]!.role !== 'unused',
+    );
     this.#running = new Int32Array(blocks * BLOCK_WORDS);
     for (let lane = 0; lane < lanes; lane++) {
       this.#running[lane >>> 5]! |= 1 << (lane & 31);
@@ -119,8 +124,10 @@ export class LaneRunner {
     return snapshot.every((saved, block) => {
       const words = this.#next.stateOf(block);
       const running = this.#running.subarray(block * BLOCK_WORDS);
-      for (let i = 0; i < words.length; i++) {
-        if (((words[i]! ^ saved[i]!) & running[i % BLOCK_WORDS]!) !== 0) return false;
+      for (const bit of this.#meaningful) {
+        for (let i = 0, at = bit * BLOCK_WORDS; i < BLOCK_WORDS; i++, at++) {
+          if (((words[at]! ^ saved[at]!) & running[i]!) !== 0) return false;
+        }
       }
       return true;
     });

@@ -43,7 +43,7 @@ export function settlePicture(report: SettleReport): string {
 <text class="title" x="${LEFT}" y="34">${escaped(title)}</text>
 <text class="quiet" x="${LEFT}" y="55">${counted(elements.length, 'state bit')}, from unknown and from ${lanes} random power-ups</text>
 ${legend('unknown', LEFT, 'x with three values', unknown.steps)}
-${legend('differing', LEFT + 330, `different in some of ${lanes} lanes`, differing.steps)}
+${legend('differing', LEFT + 330, 'of these, different between lanes', differing.steps)}
 ${gridLines(ticks, frame)}
 ${heldMark(report, frame)}
 ${area('unknown', unknown.steps, frame)}

@@ -1,4 +1,8 @@
-/** The colours and lettering of the picture, on a light and on a dark ground. */
+/**
+ * The colours and lettering of the picture, on a light and on a dark ground.
+ *
+ * The two lines often run together: the wider one shows on both sides of the other.
+ */
 export const STYLE = `
 svg { background: #fbfaf7 }
 .ground { fill: #fbfaf7 }
@@ -8,11 +12,11 @@ text { fill: #2c3138; font: 13px system-ui, sans-serif }
 .line { stroke: #e2dfd6; stroke-width: 1 }
 .axis { stroke: #868d96; stroke-width: 1 }
 .mark { stroke: #868d96; stroke-width: 1; stroke-dasharray: 3 4 }
-.unknown { fill: #3f7d83; fill-opacity: .16 }
-.differing { fill: #b4532a; fill-opacity: .5 }
-.unknown.edge, .differing.edge { fill: none; stroke-width: 2; stroke-linejoin: round }
-.unknown.edge { stroke: #3f7d83 }
-.differing.edge { stroke: #b4532a }
+.unknown { fill: #3f7d83; fill-opacity: .22 }
+.differing { fill: #c4622f; fill-opacity: .34 }
+.unknown.edge, .differing.edge { fill: none; stroke-linejoin: round }
+.unknown.edge { stroke: #3f7d83; stroke-width: 4 }
+.differing.edge { stroke: #b4532a; stroke-width: 1.5 }
 @media (prefers-color-scheme: dark) {
 svg { background: #17191d }
 .ground { fill: #17191d }

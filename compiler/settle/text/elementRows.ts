@@ -1,20 +1,26 @@
 import type { ElementReport, Witness } from '../settleReport.js';
+import { figure } from './figures.js';
 import { type FoldedName, foldNames } from './foldNames.js';
 import { grouped } from './grouped.js';
 import type { Row } from './tableLines.js';
 
-/** One row for each number of cycles, with the elements to which `afterOf` gives it. */
+/** The names of elements, in one row for each span of cycles that `afterOf` gives to a vector. */
 export function rowsByCycle(
   elements: readonly ElementReport[],
-  afterOf: (element: ElementReport) => number | undefined,
+  afterOf: (element: ElementReport) => number,
 ): Row[] {
-  const groups = grouped(elements, (element) => afterOf(element) ?? 0);
-  return [...groups]
-    .sort(([p], [q]) => p - q)
-    .map(([after, members]) => ({
-      label: `after ${after.toLocaleString('en-US')}`,
-      cells: foldNames(members).map(({ name, items }) => ({ text: name, bits: items.length })),
-    }));
+  const vectors = foldNames(elements).map(({ name, items }) => {
+    const cycles = items.map(afterOf);
+    return { name, bits: items.length, first: Math.min(...cycles), last: Math.max(...cycles) };
+  });
+  vectors.sort((p, q) => p.first - q.first || p.last - q.last);
+  const spans = grouped(vectors, ({ first, last }) =>
+    first === last ? `after ${figure(first)}` : `after ${figure(first)}-${figure(last)}`,
+  );
+  return [...spans].map(([label, members]) => ({
+    label,
+    cells: members.map(({ name, bits }) => ({ text: name, bits })),
+  }));
 }
 
 /** One row with the names of elements. */
@@ -24,6 +30,9 @@ export const rowOfNames = (elements: readonly ElementReport[]): Row[] => [
     cells: foldNames(elements).map(({ name, items }) => ({ text: name, bits: items.length })),
   },
 ];
+
+/** Hexadecimal digits that are still read at a glance. */
+const MOST_DIGITS = 16;
 
 interface Differing {
   readonly name: string;
@@ -46,15 +55,19 @@ function witnessRow({ name, items }: FoldedName<Differing>, cycles: number): Row
   const other = Math.min(...items.map(({ witness }) => witness.lanes[1]));
   const first = items.map(({ witness }) => witness.values[0]);
   const second = items.map(({ witness }) => witness.values[witness.lanes[1] === other ? 1 : 0]);
-  const when = after === cycles ? '' : ` after ${after.toLocaleString('en-US')} cycles`;
+  const when = after === cycles ? '' : ` after ${figure(after)} cycles`;
+  const cells =
+    items.length > MOST_DIGITS * 4
+      ? [`${figure(unlike(first, second))} bits differ in lanes ${lanes[0]} and ${other}${when}`]
+      : [`${digits(first)} in lane ${lanes[0]}`, `${digits(second)} in lane ${other}${when}`];
   return {
     label: name,
-    cells: [
-      { text: `${digits(first)} in lane ${lanes[0]}`, bits: items.length },
-      { text: `${digits(second)} in lane ${other}${when}`, bits: 0 },
-    ],
+    cells: cells.map((text, i) => ({ text, bits: i === 0 ? items.length : 0 })),
   };
 }
+
+const unlike = (p: readonly number[], q: readonly number[]): number =>
+  p.reduce((sum, bit, i) => sum + (bit ^ q[i]!), 0);
 
 const digits = (bits: readonly number[]): string =>
   bits.length === 1 ? `${bits[0]}` : `0x${hexadecimal(bits)}`;

@@ -18,14 +18,14 @@ interface Section {
 const sections: Readonly<Record<Verdict, Section>> = {
   known: {
     title: 'known',
-    meaning: (elements) => `after at most ${cyclesText(latest(elements, knownAfter))}`,
+    meaning: (elements) => fromText(latest(elements, knownAfter)),
     rows: (elements) => rowsByCycle(elements, knownAfter),
     most: 12,
   },
   agreed: {
     title: 'pessimistic x',
     meaning: (elements) =>
-      `x with three values, but one value in all lanes after ${cyclesText(latest(elements, agreedAfter))}`,
+      `x with three values; all lanes agree ${fromText(latest(elements, agreedAfter))}`,
     rows: (elements) => rowsByCycle(elements, agreedAfter),
     most: 8,
   },
@@ -115,16 +115,17 @@ const changeText = ({ unchangedAfter }: CourseReport, cycles: number): string =>
     ? 'change in the last cycle still'
     : `no change after ${cyclesText(unchangedAfter)}`;
 
-function bothHeldText(
+function heldTexts(
   known: Continuation | undefined,
   lanes: Continuation | undefined,
   held: number,
-): string {
+): string[] {
+  if (held === 0) return [];
   if (known?.kind === 'still' && lanes?.kind === 'still') {
-    return heldText(known.after > lanes.after ? known : lanes, held);
+    return [heldText(known.after > lanes.after ? known : lanes, held)];
   }
   const [one, other] = [heldText(known, held), heldText(lanes, held)];
-  return one === other ? one : `three values: ${one}; lanes: ${other}`;
+  return one === other ? [one] : [`three values: ${one}`, `lanes: ${other}`];
 }
 
 function heldText(found: Continuation | undefined, held: number): string {
@@ -162,6 +163,9 @@ const latest = (
   elements: readonly ElementReport[],
   afterOf: (element: ElementReport) => number,
 ): number => elements.reduce((most, element) => Math.max(most, afterOf(element)), 0);
+
+const fromText = (after: number): string =>
+  after === 0 ? 'from power-up on' : `after at most ${cyclesText(after)}`;
 
 const labelled = (label: string, content: string): string => `${label.padEnd(LABEL)}   ${content}`;
 

@@ -17,7 +17,8 @@ type FloatingBits = readonly FloatingBit[];
 
 /**
  * Whether an expression hands on a z that is written in it: as it stands, by a conditional, or
- * inside a concatenation. Any other operator makes x of z (IEEE 1364-2005, clause 5.1).
+ * inside a concatenation. Any other operator makes x of z (IEEE 1364-2005, clause 5.1), and so
+ * does a parameter here.
  */
 export function mayFloat(expression: Expression): boolean {
   // An explicit stack: conditionals are chained by the hundred.
@@ -138,7 +139,7 @@ function number(
 function concatenated(parts: readonly Expression[], context: Context): FloatingBits {
   const lowered = parts.map((part) => {
     const { width, signed } = shapeOf(part, context);
-    // Lowering it reports what a number without width is worth here.
+    // For the report that a number needs a width here.
     if (part.kind === 'number' && part.width === undefined) {
       lower({ ...part, kind: 'concat', parts: [part] }, context, width, false);
     }
