@@ -32,6 +32,21 @@ export class NameTexts {
     return this.#count;
   }
 
+  /** The names one behind another; not to be kept, as adding a name may replace them. */
+  get bytes(): Uint8Array {
+    return this.#bytes;
+  }
+
+  /** Where a name starts in `bytes`. */
+  start(id: NameId): number {
+    return this.#starts[id]!;
+  }
+
+  /** Where a name ends in `bytes`. */
+  end(id: NameId): number {
+    return this.#starts[id + 1]!;
+  }
+
   /** Adds the name in `bytes[start … end-1]` (UTF-8); returns its id. */
   add(bytes: Uint8Array, start: number, end: number): NameId {
     const id = this.#count++;

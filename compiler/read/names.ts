@@ -7,8 +7,13 @@ export type NameId = number;
 export const EMPTY_HASH = 0x811c9dc5 | 0;
 
 // FNV-1 (http://www.isthe.com/chongo/tech/comp/fnv/): as the last byte is only mixed in, names that
-// differ in it, such as n10 … n19, have neighbouring slots and share a line of the cache.
+// differ in it, such as n10 … n17, can have neighbouring slots and share a line of the cache.
 const PRIME = 0x01000193;
+
+// Multipliers that spread the upper bits of a hash: 2^32 divided by the golden ratio (Knuth, TAOCP
+// vol. 3, 6.4; from memory), and that of MurmurHash3's finalizer.
+const SPREAD = 0x9e3779b1;
+const TAG_SPREAD = 0x85ebca6b;
 
 /** The hash of some bytes and one more. */
 export function hashStep(hash: number, byte: number): number {
@@ -23,14 +28,19 @@ export function hashStep(hash: number, byte: number): number {
 export class NameTable {
   /** The names themselves. */
   readonly texts: NameTexts;
-  // Pairs of an id (-1: none) and its name's hash.
+  /**
+   * An open hash table, half full at most: -1 where it is empty, else an id in the lower bits and
+   * in the others, below the sign, some bits of the name's hash. `#idMask` has the bits of ids.
+   */
   #slots: Int32Array;
+  #idMask: number;
 
   /** Room for `expected` names is made at once; more than that cost some copying. */
   constructor(expected = 1000) {
     const capacity = 2 ** Math.ceil(Math.log2(Math.max(expected, 1000)));
     this.texts = new NameTexts(capacity);
-    this.#slots = new Int32Array(capacity * 4).fill(-1);
+    this.#slots = new Int32Array(capacity * 2).fill(-1);
+    this.#idMask = capacity - 1;
     this.intern(new Uint8Array(0), 0, 0);
   }
 
@@ -40,26 +50,23 @@ export class NameTable {
 
   /** The id of the name in `bytes[start … end-1]` (UTF-8); made if new. */
   intern(bytes: Uint8Array, start: number, end: number): NameId {
-    let hash = EMPTY_HASH;
-    for (let i = start; i < end; i++) hash = hashStep(hash, bytes[i]!);
-    return this.internHashed(bytes, start, end, hash);
+    return this.internHashed(bytes, start, end, hashOf(bytes, start, end));
   }
 
   /** Does what `intern` does, where the `hashStep` of all bytes has been taken already. */
   internHashed(bytes: Uint8Array, start: number, end: number, hash: number): NameId {
     const slots = this.#slots;
-    const mask = slots.length / 2 - 1;
-    let slot = slotOf(hash, mask);
-    for (;;) {
-      const id = slots[2 * slot]!;
-      if (id < 0) break;
-      if (slots[2 * slot + 1] === hash && this.texts.equals(id, bytes, start, end)) return id;
-      slot = (slot + 1) & mask;
+    const idMask = this.#idMask;
+    const tag = tagOf(hash, idMask);
+    let slot = slotOf(hash, slots.length - 1);
+    for (let entry = slots[slot]!; entry >= 0; entry = slots[slot]!) {
+      const id = entry & idMask;
+      if ((entry & ~idMask) === tag && this.texts.equals(id, bytes, start, end)) return id;
+      slot = (slot + 1) & (slots.length - 1);
     }
     const id = this.texts.add(bytes, start, end);
-    slots[2 * slot] = id;
-    slots[2 * slot + 1] = hash;
-    if (this.count * 4 > slots.length) this.#rehash();
+    slots[slot] = id | tag;
+    if (this.count > idMask) this.#grow();
     return id;
   }
 
@@ -74,21 +81,33 @@ export class NameTable {
     return this.texts.text(id);
   }
 
-  #rehash(): void {
-    const old = this.#slots;
-    const slots = new Int32Array(old.length * 2).fill(-1);
-    const mask = slots.length / 2 - 1;
-    for (let i = 0; i < old.length; i += 2) {
-      if (old[i]! < 0) continue;
-      let slot = slotOf(old[i + 1]!, mask);
-      while (slots[2 * slot]! >= 0) slot = (slot + 1) & mask;
-      slots[2 * slot] = old[i]!;
-      slots[2 * slot + 1] = old[i + 1]!;
+  #grow(): void {
+    const slots = new Int32Array(this.#slots.length * 2).fill(-1);
+    const mask = slots.length - 1;
+    const idMask = this.#idMask * 2 + 1;
+    const { texts } = this;
+    for (let id = 0; id < texts.count; id++) {
+      const hash = hashOf(texts.bytes, texts.start(id), texts.end(id));
+      let slot = slotOf(hash, mask);
+      while (slots[slot]! >= 0) slot = (slot + 1) & mask;
+      slots[slot] = id | tagOf(hash, idMask);
     }
     this.#slots = slots;
+    this.#idMask = idMask;
   }
 }
 
+function hashOf(bytes: Uint8Array, start: number, end: number): number {
+  let hash = EMPTY_HASH;
+  for (let i = start; i < end; i++) hash = hashStep(hash, bytes[i]!);
+  return hash;
+}
+
+// Eight names that differ in the last byte alone stay together.
 function slotOf(hash: number, mask: number): number {
-  return (hash ^ (hash >>> 15)) & mask;
+  return (((Math.imul(hash >>> 3, SPREAD) >>> 8) << 3) | (hash & 7)) & mask;
+}
+
+function tagOf(hash: number, idMask: number): number {
+  return Math.imul(hash, TAG_SPREAD) & 0x7fffffff & ~idMask;
 }

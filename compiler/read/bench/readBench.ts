@@ -104,6 +104,9 @@ class BenchReader {
     this.#scanner.next();
     const { start: wordStart, end: wordEnd } = this.#scanner;
     if (!this.#pass(Token.Word, 'the kind of a gate')) return;
+    // Defined even if the gate is wrong: one fault, one message.
+    const name = this.#nets.at(start, end);
+    const isNew = this.#define(name, start);
     const word = this.#gateWord(wordStart, wordEnd);
     if (word === undefined) {
       const known = [...gateWords.keys()].join(', ');
@@ -117,8 +120,7 @@ class BenchReader {
       this.#arityError(word, inputs.length, wordStart, wordEnd);
       return;
     }
-    const name = this.#nets.at(start, end);
-    if (this.#define(name, start)) this.#drive(this.#nets.net(name), word.kind, inputs, start);
+    if (isNew) this.#drive(this.#nets.net(name), word.kind, inputs, start);
   }
 
   #gateInputs(): NetId[] | undefined {

@@ -75,9 +75,30 @@ export class Scanner {
   /** Reads the next token. At the end of the input it stays at `EndOfInput`. */
   next(): void {
     this.lastEnd = this.end;
+    if (this.#scanCommon()) return;
     do this.#scan();
     while (this.kind === Token.Nothing);
     this.end = this.fixedStart < 0 ? this.base + this.at : this.fixedEnd;
+  }
+
+  /** Reads a name or a sign in a file, after one blank at most: nearly all tokens of a netlist. */
+  #scanCommon(): boolean {
+    const text = this.text;
+    let at = this.at;
+    if (at + 2 >= text.length || this.fixedStart >= 0) return false;
+    let first = text[at]!;
+    if (first === Char.Space) first = text[++at]!;
+    const single = singleTokens[first]!;
+    if (single !== 0) {
+      // An attribute may begin here.
+      if (first === Char.LeftParen && text[at + 1] === Char.Star) return false;
+      this.kind = single;
+      this.at = at + 1;
+    } else if (charClass[first] === CharClass.Letter) this.#identifier(at);
+    else return false;
+    this.start = this.base + at;
+    this.end = this.base + this.at;
+    return true;
   }
 
   #scan(): void {
@@ -286,8 +307,15 @@ export class Scanner {
 
   #escaped(start: number): void {
     const text = this.text;
+    const limit = text.length;
     let at = start + 1;
-    while (at < text.length && !isSpace(text[at])) at++;
+    let hash = EMPTY_HASH;
+    while (at < limit) {
+      const c = text[at]!;
+      if (charClass[c] === CharClass.Space) break;
+      hash = hashStep(hash, c);
+      at++;
+    }
     this.at = at;
     if (at === start + 1) {
       this.#problem("a name is missing after '\\'", start, at);
@@ -295,7 +323,7 @@ export class Scanner {
       return;
     }
     this.kind = Token.Identifier;
-    this.value = this.#names.intern(text, start + 1, at);
+    this.value = this.#names.internHashed(text, start + 1, at, hash);
   }
 
   #string(start: number): void {

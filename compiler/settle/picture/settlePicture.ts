@@ -31,7 +31,7 @@ export function settlePicture(report: SettleReport): string {
   const { circuit, elements, unknown, differing, cycles } = report;
   const changed = Math.max(unknown.unchangedAfter, differing.unchangedAfter);
   const last = Math.max(1, Math.min(cycles, Math.max(FEWEST_SHOWN, Math.ceil(changed * 1.2) + 1)));
-  const ticks = countTicks(Math.max(1, ...unknown.steps.map(([, members]) => members)));
+  const ticks = countTicks(most([...unknown.steps, ...differing.steps]));
   const frame: Frame = { scale: cycleScale(last), last, ceiling: ticks.at(-1)! };
   const title = `Unknown state of ${circuit}`;
   const lanes = figure(report.lanes);
@@ -70,6 +70,9 @@ function acrossText({ cycles }: SettleReport, { scale, last }: Frame): string {
   const kind = scale.isLogarithmic ? 'cycles done (logarithmic scale)' : 'cycles done';
   return last < cycles ? `${kind}; no change from here to ${figure(cycles)}` : kind;
 }
+
+const most = (steps: readonly Step[]): number =>
+  steps.reduce((so, [, members]) => Math.max(so, members), 1);
 
 const xOf = ({ scale }: Frame, cycles: number): number =>
   LEFT + scale.at(cycles) * (WIDTH - RIGHT - LEFT);

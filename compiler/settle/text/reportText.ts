@@ -104,9 +104,9 @@ function changeLines({ unknown, differing, cycles, stimulusCycles }: SettleRepor
   return [
     labelled('unknown bits', changeText(unknown, cycles)),
     labelled('differing bits', changeText(differing, cycles)),
-    ...(held > 0
-      ? [labelled('inputs held', bothHeldText(unknown.held, differing.held, held))]
-      : []),
+    ...heldTexts(unknown.held, differing.held, held).map((text, i) =>
+      labelled(i === 0 ? 'inputs held' : '', text),
+    ),
   ];
 }
 

@@ -1,3 +1,5 @@
+import { figure } from './figures.js';
+
 /** Words of a table, and how many bits they tell of. */
 export interface Cell {
   readonly text: string;
@@ -16,33 +18,47 @@ interface Line {
 }
 
 const INDENT = '  ';
+const GAP = '   ';
+const WIDEST_LABELS = 36;
 
 /**
- * Rows as lines of at most `width` characters, labels in a column of their own; cells are never
- * broken. Of more than `most` lines the last says how many bits are left out.
+ * Rows as lines of at most `width` characters, as far as single cells and labels fit; labels of
+ * up to 36 characters make a column. Of more than `most` lines the last says how many bits are
+ * left out.
  */
 export function tableLines(rows: readonly Row[], width: number, most: number): string[] {
-  const labelWidth = Math.max(0, ...rows.map(({ label }) => label.length));
-  const lines = rows.flatMap((row) => wrapped(row, labelWidth, width));
-  if (lines.length <= most) return lines.map(({ text }) => text);
-  const shown = lines.slice(0, most - 1);
-  const rest = lines.slice(most - 1).reduce((sum, { bits }) => sum + bits, 0);
-  return [...shown.map(({ text }) => text), `${INDENT}and ${rest.toLocaleString('en-US')} more`];
+  // Every row takes a line at least.
+  const shown = rows.slice(0, most);
+  const labelWidth = Math.min(
+    WIDEST_LABELS,
+    Math.max(0, ...shown.map(({ label }) => label.length)),
+  );
+  const lines = shown.flatMap((row) => wrapped(row, labelWidth, width));
+  if (lines.length <= most && shown.length === rows.length) return lines.map(({ text }) => text);
+  const kept = lines.slice(0, most - 1);
+  const rest = bitsOf(rows.flatMap(({ cells }) => cells)) - bitsOf(kept);
+  return [...kept.map(({ text }) => text), `${INDENT}and ${figure(rest)} more`];
 }
+
+const bitsOf = (parts: readonly { readonly bits: number }[]): number =>
+  parts.reduce((sum, { bits }) => sum + bits, 0);
 
 function wrapped({ label, cells }: Row, labelWidth: number, width: number): Line[] {
   const lines: Line[] = [];
-  const blank = `${INDENT}${' '.repeat(labelWidth)}`;
   let text = `${INDENT}${label.padEnd(labelWidth)}`;
+  let words = 0;
   let bits = 0;
   cells.forEach((cell, i) => {
     const word = i + 1 < cells.length ? `${cell.text},` : cell.text;
-    if (bits > 0 && text.length + 1 + word.length > width) {
+    if (words > 0 && text.length + 1 + word.length > width) {
       lines.push({ text, bits });
-      text = blank;
+      text = `${INDENT}${' '.repeat(labelWidth)}`;
+      words = 0;
       bits = 0;
     }
-    text += bits === 0 ? `   ${word}` : ` ${word}`;
+    const gap = words > 0 ? ' ' : labelWidth > 0 ? GAP : '';
+    text += gap + word;
+    words++;
     bits += cell.bits;
   });
   return [...lines, { text, bits }];
