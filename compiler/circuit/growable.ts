@@ -28,7 +28,8 @@ export class GrowableUint32 {
   extend(count: number, value: number): void {
     const end = this.#length + count;
     if (end > this.#data.length) this.#grow(end);
-    this.#data.fill(value, this.#length, end);
+    const data = this.#data;
+    for (let at = this.#length; at < end; at++) data[at] = value;
     this.#length = end;
   }
 

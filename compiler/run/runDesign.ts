@@ -7,6 +7,7 @@ import { type PowerUp, powerUpState } from '../circuit/powerUp.js';
 import type { Design } from '../compile.js';
 import type { Emitter } from '../emit/emitter.js';
 import { createEngine, type EngineName } from '../engines.js';
+import { BusWatch } from './busWatch.js';
 import { Departures } from './departures.js';
 import { Progress } from './progress.js';
 import { INTERRUPTED, type RunSummary } from './runSummary.js';
@@ -50,7 +51,8 @@ export interface RunRequest {
  */
 export async function runDesign(design: Design, request: RunRequest): Promise<RunSummary> {
   const { layout, circuit } = design;
-  const engine = await createEngine(design, request.engine, request.emitter);
+  const watch = BusWatch.of(design);
+  const engine = await createEngine(watch?.design ?? design, request.engine, request.emitter);
   engine.reset(powerUpState(circuit, request.powerUp, request.seed));
   const outlets = await Outlets.open(design, request);
   const progress = new Progress(request.cycles);
@@ -59,9 +61,10 @@ export async function runDesign(design: Design, request: RunRequest): Promise<Ru
   try {
     for await (const block of runBlocks(engine, request.stimulus, {
       ...(request.cycles !== undefined && { cycles: request.cycles }),
-      response: outlets.areWanted,
+      response: outlets.areWanted || watch !== undefined,
     })) {
-      await outlets.take(block);
+      const taken = await outlets.take(watch?.ownPart(block) ?? block);
+      watch?.look(block, taken);
       if (block.firstCycle === 0) request.onStart?.();
       progress.update(outlets.cycles);
       // Without a pause no event is handled, and an interrupt is one.
@@ -74,7 +77,8 @@ export async function runDesign(design: Design, request: RunRequest): Promise<Ru
     progress.clear();
     const seconds = (performance.now() - started) / 1000;
     await outlets.finish();
-    return summaryOf(request, outlets, seconds, layout.threeValued ? engine : undefined);
+    const summary = summaryOf(request, outlets, seconds, layout.threeValued ? engine : undefined);
+    return { ...summary, ...(watch && { buses: watch.events() }) };
   } finally {
     progress.clear();
     outlets.discard();
@@ -144,7 +148,8 @@ class Outlets {
     return (this.#writer ?? this.departures ?? this.signature) !== undefined;
   }
 
-  async take(block: ResponseBlock): Promise<void> {
+  /** Takes a block; returns how many of its cycles count. */
+  async take(block: ResponseBlock): Promise<number> {
     const last = await this.departures?.check(block);
     if (last !== undefined) this.isEnough = true;
     // What follows the departure was run, but was not asked for.
@@ -152,6 +157,7 @@ class Outlets {
     this.signature?.add(block.rows, cycles);
     this.#writer?.write({ ...block, cycles });
     this.cycles = block.firstCycle + cycles;
+    return cycles;
   }
 
   async finish(): Promise<void> {

@@ -1,6 +1,7 @@
 import type { Departure } from '../../runtime/node/index.js';
 import type { PowerUp } from '../circuit/powerUp.js';
 import type { EngineName } from '../engines.js';
+import { type BusEvent, busEventText } from './busWatch.js';
 
 /** What a run came to; printed as it stands by `run --json`. */
 export interface RunSummary {
@@ -19,6 +20,8 @@ export interface RunSummary {
   readonly stopped?: { readonly cycle: number; readonly reason: string };
   /** State elements that are x at the end of a three-valued run. */
   readonly unknownRegisters?: readonly string[];
+  /** Buses that were in conflict or floated, where the circuit has buses. */
+  readonly buses?: readonly BusEvent[];
   readonly notes: readonly string[];
 }
 
@@ -39,12 +42,19 @@ export function summaryText(summary: RunSummary, expectation: string | undefined
   ];
   if (summary.signature !== undefined) lines.push(`signature ${summary.signature}`);
   if (summary.unknownRegisters !== undefined) lines.push(unknownText(summary.unknownRegisters));
+  lines.push(...busLines(summary.buses ?? []));
   for (const note of summary.notes) lines.push(`note: ${note}`);
   if (summary.stopped?.reason === INTERRUPTED) {
     lines.push(`stopped at cycle ${summary.stopped.cycle}: ${summary.stopped.reason}`);
   }
   if (expectation !== undefined) lines.push(verdict(summary, expectation));
   return lines.join('\n');
+}
+
+function busLines(buses: readonly BusEvent[]): string[] {
+  const rest = buses.length - SHOWN;
+  const more = rest > 0 ? [`and ${rest} more buses in conflict or floating`] : [];
+  return [...buses.slice(0, SHOWN).map(busEventText), ...more];
 }
 
 function verdict({ mismatch, mismatches }: RunSummary, expectation: string): string {

@@ -137,7 +137,10 @@ describe('the ripple counter of a two and an eight (74x93)', () => {
     [10, 'qb', 'qd'],
     [9, 'qa', 'qd'],
   ])('counts to %i with its reset inputs at %s and %s', async (modulus, r1, r2) => {
-    const response = await responseTo(joined(r1, r2), upTo(40).map(() => ''));
+    const response = await responseTo(
+      joined(r1, r2),
+      upTo(40).map(() => ''),
+    );
     expect(response).toEqual(upTo(40).map((i) => spaced(i % modulus)));
   });
 });
@@ -175,19 +178,36 @@ describe('the decade counter of a two and a five (74x90)', () => {
       module decade (input ck_a, output qd, qc, qb, qa);
         counter part (ck_a, qa, 1'b0, 1'b0, 1'b0, 1'b0, qa, qb, qc, qd);
       endmodule`);
-    const response = await responseTo(part, upTo(35).map(() => ''));
+    const response = await responseTo(
+      part,
+      upTo(35).map(() => ''),
+    );
     expect(response).toEqual(upTo(35).map((i) => Array.from(binary(i % 10, 4)).join(' ')));
   });
 
   // The bi-quinary sequence of the data sheet: qa qd qc qb.
-  const biquinary = ['0000', '0001', '0010', '0011', '0100', '1000', '1001', '1010', '1011', '1100'];
+  const biquinary = [
+    '0000',
+    '0001',
+    '0010',
+    '0011',
+    '0100',
+    '1000',
+    '1001',
+    '1010',
+    '1011',
+    '1100',
+  ];
 
   it('counts bi-quinary where the two follows the five: a square wave of a tenth', async () => {
     const part = circuitFrom(`${counter}
       module biquinary (input ck_b, output qa, qd, qc, qb);
         counter part (qd, ck_b, 1'b0, 1'b0, 1'b0, 1'b0, qa, qb, qc, qd);
       endmodule`);
-    const response = await responseTo(part, upTo(35).map(() => ''));
+    const response = await responseTo(
+      part,
+      upTo(35).map(() => ''),
+    );
     expect(response.map((row) => row.replaceAll(' ', ''))).toEqual(
       upTo(35).map((i) => biquinary[i % 10]),
     );

@@ -101,9 +101,13 @@ describe('the quad D flip-flop with common clear (74x175)', () => {
   it('follows its function table', () => expectCourse(part, functionTable));
 
   it('follows it from an unknown power-up', () =>
-    expectCourse(part, `1 xxxx : xxxx xxxx\n${functionTable}\n1 x10x : 0000 1111\n1 0000 : x10x x01x`, {
-      threeValued: true,
-    }));
+    expectCourse(
+      part,
+      `1 xxxx : xxxx xxxx\n${functionTable}\n1 x10x : 0000 1111\n1 0000 : x10x x01x`,
+      {
+        threeValued: true,
+      },
+    ));
 });
 
 describe('the JK flip-flop on the falling edge', () => {
@@ -233,7 +237,8 @@ describe('the master-slave JK flip-flop of eight NAND gates (7472 kind, without 
   it('follows its function table', () => expectCourse(flipFlop(gates), functionTable));
 
   it.each([1, 2, 3])('follows it however its gates are written (%i)', (seed) =>
-    expectCourse(flipFlop(shuffled(gates, seed)), functionTable));
+    expectCourse(flipFlop(shuffled(gates, seed)), functionTable),
+  );
 
   it('follows it from an unknown power-up once cleared', () =>
     expectCourse(flipFlop(gates), `1 0 1 0 : x x\n${functionTable}`, { threeValued: true }));

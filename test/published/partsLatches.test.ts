@@ -76,7 +76,8 @@ describe('the latch in which one input wins', () => {
       '0 1 : 0\n1 0 : 1\n0 0 : 1\n1 1 : 0\n0 1 : 0\n0 0 : 0\n1 0 : 1\n1 1 : 0\n1 0 : 1',
     ));
   it('is known under the winning input alone', async () => {
-    const text = (gates: string) => circuitFrom(`module part (input s, r, output q);
+    const text = (gates: string) =>
+      circuitFrom(`module part (input s, r, output q);
       not (r_n, r); ${gates} endmodule`);
     const set = text('and (kept, r_n, q); or (q, s, kept);');
     const reset = text('or (kept, s, q); and (q, r_n, kept);');
@@ -95,7 +96,7 @@ describe('the gated D latch', () => {
     // The third term holds q while the enable goes from one of the others to the other.
     'of AND and NOR gates (74x75)': `
       not (g_n, g), (q, q_n); and (a, d, g), (b, q, g_n), (c, d, q); nor (q_n, a, b, c);`,
-    'of a multiplexer': "assign q = g ? d : q; assign q_n = ~q;",
+    'of a multiplexer': 'assign q = g ? d : q; assign q_n = ~q;',
   };
 
   const gates = Object.entries(gated).map(([name, text]) => ({
@@ -116,30 +117,35 @@ describe('the gated D latch', () => {
       0 1 : 1 0
       0 0 : 1 0
       1 0 : 0 1`,
-    ));
+    ),
+  );
 
   it.each(gates)('is unknown until it is enabled: $name', ({ latch }) =>
     expectCourse(latch, '0 0 : x x\n0 1 : x x\n1 1 : 1 0\n0 x : 1 0\n1 x : x x\n0 0 : x x', {
       threeValued: true,
-    }));
+    }),
+  );
 
-  it.each(gates)('does as the last data while enabled over a random course: $name', async ({ latch }) => {
-    const random = new RandomBits(75);
-    const rows = ['10'];
-    // Never both at once: the data must be there before the enable goes.
-    for (let i = 0; i < 2000; i++) {
-      const row = Array.from(rows[i]!, Number);
-      const input = random.next() & 1;
-      row[input] = 1 - row[input]!;
-      rows.push(row.join(''));
-    }
-    let q = '0';
-    const expected = rows.map(([enable, data]) => {
-      if (enable === '1') q = data!;
-      return `${q} ${1 - Number(q)}`;
-    });
-    expect(await responseTo(latch, rows)).toEqual(expected);
-  });
+  it.each(gates)(
+    'does as the last data while enabled over a random course: $name',
+    async ({ latch }) => {
+      const random = new RandomBits(75);
+      const rows = ['10'];
+      // Never both at once: the data must be there before the enable goes.
+      for (let i = 0; i < 2000; i++) {
+        const row = Array.from(rows[i]!, Number);
+        const input = random.next() & 1;
+        row[input] = 1 - row[input]!;
+        rows.push(row.join(''));
+      }
+      let q = '0';
+      const expected = rows.map(([enable, data]) => {
+        if (enable === '1') q = data!;
+        return `${q} ${1 - Number(q)}`;
+      });
+      expect(await responseTo(latch, rows)).toEqual(expected);
+    },
+  );
 });
 
 describe('the Muller C element', () => {
@@ -156,7 +162,8 @@ describe('the Muller C element', () => {
   }));
 
   it.each(elements)('changes when both inputs agree: $name', ({ element }) =>
-    expectCourse(element, '0 0 : 0\n0 1 : 0\n1 1 : 1\n0 1 : 1\n1 0 : 1\n0 0 : 0\n1 0 : 0\n1 1 : 1'));
+    expectCourse(element, '0 0 : 0\n0 1 : 0\n1 1 : 1\n0 1 : 1\n1 0 : 1\n0 0 : 0\n1 0 : 0\n1 1 : 1'),
+  );
 
   it.each(elements)('holds over a random course: $name', async ({ element }) => {
     const random = new RandomBits(1959);
@@ -172,5 +179,6 @@ describe('the Muller C element', () => {
   it.each(elements)('knows what both values of an input lead to: $name', ({ element }) =>
     expectCourse(element, '0 1 : x\nx 0 : x\n0 0 : 0\nx 0 : 0\nx 1 : x\n1 1 : 1\n1 x : 1', {
       threeValued: true,
-    }));
+    }),
+  );
 });

@@ -44,11 +44,7 @@ describe('the 4-bit universal shift register (74x194)', () => {
       state: binary(i >> 9, 4),
       inputs: binary(i & 511, 9),
     }));
-    const rows = cases.flatMap(({ state, inputs }) => [
-      `1 11 00 ${state}`,
-      inputs,
-      '1 00 00 0000',
-    ]);
+    const rows = cases.flatMap(({ state, inputs }) => [`1 11 00 ${state}`, inputs, '1 00 00 0000']);
     const expected = cases.flatMap(({ state, inputs }) => {
       const [clear, mode, sl, sr] = [inputs[0], inputs.slice(1, 3), inputs[3]!, inputs[4]!];
       if (clear === '0') return ['0000', '0000'];

@@ -16,9 +16,7 @@ describe('gates with unknown inputs, read from Verilog', () => {
     ['xor', '01x 10x xxx'],
     ['xnor', '10x 01x xxx'],
   ])('follow the table of %s', async (gate, table) => {
-    const circuit = circuitFrom(
-      `module t (input a, b, output y); ${gate} (y, a, b); endmodule`,
-    );
+    const circuit = circuitFrom(`module t (input a, b, output y); ${gate} (y, a, b); endmodule`);
     const response = await responseTo(circuit, pairs, options);
     expect(response.join('')).toBe(table.replaceAll(' ', ''));
   });

@@ -95,7 +95,8 @@ describe('user-defined primitives with unknown inputs', () => {
     });
     const known = expected.map((value, i) => (value === 'x' ? value : response[i]!));
     expect(known).toEqual(expected);
-    for (const value of '01x') expect(expected.filter((each) => each === value).length).toBeGreaterThan(100);
+    for (const value of '01x')
+      expect(expected.filter((each) => each === value).length).toBeGreaterThan(100);
     const unknown = (row: readonly string[]) => row.filter((value) => value === 'x').length;
     expect(unknown(response)).toBeLessThanOrEqual(unknown(expected));
     expect(unknown(response)).toBeGreaterThan(100);

@@ -1,8 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import { designOf } from '../../compiler/compile.js';
 import { RandomBits } from '../../runtime/random.js';
-import { play } from '../support/rows.js';
 import { binary, circuitFrom, expectCourse, onEachEngine } from '../sequential/courses.js';
+import { play } from '../support/rows.js';
 
 // E. B. Eichelberger, "Hazard detection in combinational and sequential switching circuits", IBM
 // Journal of Research and Development 9(2), 1965: an input in change is x; what is x while it

@@ -105,16 +105,19 @@ describe('a FIFO between two clocks', () => {
     }
   });
 
-  it.each(periods)('loses and doubles nothing in 200,000 cycles, with periods %i and %i', async (write, read) => {
-    const design = designOf(fifo, { timings: timings(write, read) });
-    const engine = await wasmEngineOf(design);
-    engine.reset(powerUpState(fifo, 'zero'));
-    responseOf(engine, 200_000, randomRows(design.layout, write, 200_000));
-    const rest = Array.from({ length: 100 }, () => ({ put: 0, take: 1 }));
-    const end = playValues(engine, rest);
-    expect(end('fault', 99)).toBe(0n);
-    expect(end('taken', 99)).toBe(end('written', 99));
-    expect([end('empty', 99), end('full', 99)]).toEqual([1n, 0n]);
-    expect(end('written', 99)).toBeGreaterThan(0n);
-  });
+  it.each(periods)(
+    'loses and doubles nothing in 200,000 cycles, with periods %i and %i',
+    async (write, read) => {
+      const design = designOf(fifo, { timings: timings(write, read) });
+      const engine = await wasmEngineOf(design);
+      engine.reset(powerUpState(fifo, 'zero'));
+      responseOf(engine, 200_000, randomRows(design.layout, write, 200_000));
+      const rest = Array.from({ length: 100 }, () => ({ put: 0, take: 1 }));
+      const end = playValues(engine, rest);
+      expect(end('fault', 99)).toBe(0n);
+      expect(end('taken', 99)).toBe(end('written', 99));
+      expect([end('empty', 99), end('full', 99)]).toEqual([1n, 0n]);
+      expect(end('written', 99)).toBeGreaterThan(0n);
+    },
+  );
 });

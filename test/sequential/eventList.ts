@@ -29,10 +29,7 @@ export function eventList<Row>(
   const at =
     (tick: number): Levels =>
     (port) =>
-      isHigh(
-        tick,
-        timings.find((timing) => timing.port === port)!,
-      );
+      isHigh(tick, timings.find((timing) => timing.port === port)!);
   const sampled: string[] = [];
   for (let tick = 0; tick < rows.length * base.period; tick++) {
     const [before, after] = [at(tick - 1), at(tick)];

@@ -38,15 +38,15 @@ describe('the three-valued run knows nothing that a lane contradicts', () => {
   const kinds: [string, RandomCircuitOptions][] = [
     ['registers on one edge', { unknowns: true, asynchronous: true }],
     ['both edges, latches and gated clocks', { clocking: 'gated', latches: true }],
-    ['divided clocks', { clocking: 'divided', latches: true, asynchronous: true }],
-    ['combinational loops', { loops: true, latches: true, asynchronous: true, maxGates: 20 }],
+    ['divided clocks', { clocking: 'divided', asynchronous: true, maxGates: 20 }],
+    ['combinational loops', { loops: true, latches: true, asynchronous: true, maxGates: 12 }],
   ];
   it.each(kinds)('with %s', (_, options) => {
     fc.assert(
       fc.property(randomCircuit(options), fc.nat(1e6), (circuit, seed) => {
         expect(contradictions(circuit, seed)).toEqual([]);
       }),
-      { seed: 4711, numRuns: 60 },
+      { seed: 4711, numRuns: 20 },
     );
   });
 });

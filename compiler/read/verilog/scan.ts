@@ -90,7 +90,8 @@ export class Scanner {
     if (first === Char.Space) first = text[++at]!;
     const single = singleTokens[first]!;
     if (single !== 0) {
-      // An attribute may begin here.
+      // A comment or an attribute may begin here.
+      if (first === Char.Slash) return false;
       if (first === Char.LeftParen && text[at + 1] === Char.Star) return false;
       this.kind = single;
       this.at = at + 1;

@@ -46,8 +46,7 @@ ${legend('unknown', LEFT, 'x with three values', unknown.steps)}
 ${legend('differing', LEFT + 330, 'of these, different between lanes', differing.steps)}
 ${gridLines(ticks, frame)}
 ${heldMark(report, frame)}
-${area('unknown', unknown.steps, frame)}
-${area('differing', differing.steps, frame)}
+${areas(report, frame)}
 <line class="axis" x1="${LEFT}" y1="${BASE}" x2="${WIDTH - RIGHT}" y2="${BASE}"/>
 ${cycleTicks(frame)}
 ${label('quiet', (LEFT + WIDTH - RIGHT) / 2, BASE + 44, 'middle', acrossText(report, frame))}
@@ -111,20 +110,28 @@ function heldMark({ stimulusCycles, cycles }: SettleReport, frame: Frame): strin
   return `<line class="mark" x1="${x}" y1="${TOP - 14}" x2="${x}" y2="${BASE}"/>${text}`;
 }
 
-/** The count over the cycles as a staircase, filled down to the axis. */
-function area(kind: string, steps: readonly Step[], frame: Frame): string {
-  const shown = steps.filter(([after]) => after <= frame.last);
-  const stairs = shown.map(([after, members], i) => {
-    const x = round(xOf(frame, after));
-    const y = round(yOf(frame, members));
-    return i === 0 ? `M${x} ${y}` : `H${x}V${y}`;
-  });
-  const end = `H${round(xOf(frame, frame.last))}`;
-  const line = `${stairs.join('')}${end}`;
-  return (
-    `<path class="${kind}" d="${line}V${BASE}H${LEFT}Z"/>` +
-    `<path class="${kind} edge" d="${line}"/>`
-  );
+// Where both fill the same place neither colour would be its own: the first fills the gap alone.
+function areas({ unknown, differing }: SettleReport, frame: Frame): string {
+  const [upper, lower] = [stairs(unknown.steps, frame), stairs(differing.steps, frame)];
+  const down = `V${BASE}H${LEFT}Z`;
+  return [
+    `<path class="unknown" fill-rule="evenodd" d="${upper}${down}${lower}${down}"/>`,
+    `<path class="differing" d="${lower}${down}"/>`,
+    `<path class="unknown edge" d="${upper}"/>`,
+    `<path class="differing edge" d="${lower}"/>`,
+  ].join('\n');
+}
+
+/** The count over the cycles as a staircase from left to right. */
+function stairs(steps: readonly Step[], frame: Frame): string {
+  const corners = steps
+    .filter(([after]) => after <= frame.last)
+    .map(([after, members], i) => {
+      const x = round(xOf(frame, after));
+      const y = round(yOf(frame, members));
+      return i === 0 ? `M${x} ${y}` : `H${x}V${y}`;
+    });
+  return `${corners.join('')}H${round(xOf(frame, frame.last))}`;
 }
 
 function cycleTicks(frame: Frame): string {

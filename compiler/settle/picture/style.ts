@@ -12,8 +12,8 @@ text { fill: #2c3138; font: 13px system-ui, sans-serif }
 .line { stroke: #e2dfd6; stroke-width: 1 }
 .axis { stroke: #868d96; stroke-width: 1 }
 .mark { stroke: #868d96; stroke-width: 1; stroke-dasharray: 3 4 }
-.unknown { fill: #3f7d83; fill-opacity: .22 }
-.differing { fill: #c4622f; fill-opacity: .34 }
+.unknown { fill: #3f7d83; fill-opacity: .28 }
+.differing { fill: #c4622f; fill-opacity: .32 }
 .unknown.edge, .differing.edge { fill: none; stroke-linejoin: round }
 .unknown.edge { stroke: #3f7d83; stroke-width: 4 }
 .differing.edge { stroke: #b4532a; stroke-width: 1.5 }

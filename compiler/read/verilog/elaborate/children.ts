@@ -82,6 +82,7 @@ export class Children {
 
   /** Nets of the child that hierarchical names make one with nets of the parent. */
   imports(child: number): readonly Import[] {
+    if (this.#imports.size === 0) return noImports;
     return this.#imports.get(child) ?? noImports;
   }
 

@@ -56,19 +56,24 @@ function connectInstance(
   const template = body.design.templates[body.children.template(child)]!;
   const count = body.arrayLength(number);
   const connected: Connected = { scope, instance, child, count, template };
-  const seen: number[] = [];
-  let empty = 0;
+  // Places of more than 31 ports are told apart by a set, which few instances need.
+  const seen = template.ports.length > 31 ? new Set<number>() : undefined;
+  let seenBits = 0;
+  let connections = 0;
   for (let connection = first; connection < end; connection++) {
     const place = portPlace(body, connected, connection, connection - first);
     if (place < 0) continue;
-    if (seen.includes(place)) reportTwice(body, connected, connection, place);
-    else {
-      seen.push(place);
-      if (table.connectionKind(connection) === ConnectionKind.Empty) empty++;
-      connectPort(body, connected, connection, template.ports[place]!);
+    const isSeen = seen === undefined ? (seenBits >>> place) & 1 : seen.has(place);
+    if (isSeen) {
+      reportTwice(body, connected, connection, place);
+      continue;
     }
+    seenBits |= 1 << place;
+    seen?.add(place);
+    if (table.connectionKind(connection) !== ConnectionKind.Empty) connections++;
+    connectPort(body, connected, connection, template.ports[place]!);
   }
-  if (seen.length - empty < template.ports.length) finishUnconnected(body, connected);
+  if (connections < template.ports.length) finishUnconnected(body, connected);
   joinRepeats(body, connected);
 }
 
@@ -96,6 +101,8 @@ function portPlace(
     }
     return -1;
   }
+  // Most netlists name the ports in the order of their declaration.
+  if (ports[position]?.name === name) return position;
   const place = portOfName.get(name);
   if (place !== undefined) return place;
   const { start, end } = body.wordAt(table.connectionPosition(connection));

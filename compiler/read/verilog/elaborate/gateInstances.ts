@@ -38,13 +38,14 @@ function checkTerminals(body: ModuleBody, { word, row, instance }: Gate): boolea
   const table = body.module.instances;
   const first = table.connectionStart(instance);
   const got = table.connectionStart(instance + 1) - first;
-  const { start, end } = body.wordAt(table.position(instance));
   const { least, most, text } = terminalsOf[row.form];
-  if (got < least || got > most) {
+  const isCountRight = got >= least && got <= most;
+  if (isCountRight && table.connectionPort(first) === POSITIONAL) return true;
+  const { start, end } = body.wordAt(table.position(instance));
+  if (!isCountRight) {
     body.report('gate-arity', `${word} takes ${text}, got ${got} connections`, start, end);
     return false;
   }
-  if (table.connectionPort(first) === POSITIONAL) return true;
   const message = `the terminals of ${word} have no names; connect them by position`;
   body.report('port-unknown', message, start, end);
   return false;

@@ -205,7 +205,6 @@ export class Stamper {
       }
       this.#modules.set(template, module!);
     }
-    scopes.length = 0;
     for (let index = 0; index < blocks.length; index++) {
       const block = blocks[index]!;
       for (let bit = 0; bit < block.nets.length; bit++) {
@@ -213,7 +212,7 @@ export class Stamper {
       }
       const outer = index === 0 ? parent : scopes[block.parent]!;
       const own = index === 0 ? name : block.name;
-      scopes.push(hierarchy.addScope(own, outer, module! + index, block.scratch));
+      scopes[index] = hierarchy.addScope(own, outer, module! + index, block.scratch);
     }
   }
 }
