@@ -52,12 +52,16 @@ export class BusWatch {
     const groups = threeValued ? 2 : 1;
     const from = rowStride(this.#watched.outputs, threeValued);
     const to = rowStride(this.#own.outputs, threeValued);
-    const { words } = this.#own.outputs;
+    const { words, bits } = this.#own.outputs;
+    // What pads the last word in the watched row is no part of the response.
+    const lastWord = bits % 32 === 0 ? -1 : (1 << (bits % 32)) - 1;
     if (this.#rows.length < block.cycles * to) this.#rows = new Uint32Array(block.cycles * to);
     for (let row = 0; row < block.cycles; row++) {
       for (let group = 0; group < groups; group++) {
         const start = row * from + group * this.#watched.outputs.words;
-        this.#rows.set(block.rows.subarray(start, start + words), row * to + group * words);
+        const end = row * to + (group + 1) * words;
+        this.#rows.set(block.rows.subarray(start, start + words), end - words);
+        if (words > 0) this.#rows[end - 1]! &= lastWord;
       }
     }
     return { ...block, rows: this.#rows.subarray(0, block.cycles * to) };

@@ -99,7 +99,10 @@ describe('settle', () => {
     const { status } = await folder.run('settle', 'chain.bench', '--picture', 'chain.svg');
     expect(status).toBe(0);
     expect(folder.names()).toEqual([...before, 'chain.svg'].sort());
-    expect(folder.read('chain.svg')).toMatch(/^<svg [^]*16 → 0[^]*<\/svg>\n$/);
+    const picture = folder.read('chain.svg');
+    expect(picture).toMatch(/^<svg /);
+    expect(picture).toContain('16 → 0');
+    expect(picture.endsWith('</svg>\n')).toBe(true);
   });
 
   it('has its help with an example and what its exit status tells', async () => {
@@ -113,7 +116,6 @@ describe('settle', () => {
     ['an unknown input', ['--stimulus', 'x.csv'], 'x.csv:2:1: rst is x: '],
     ['a missing stimulus', ['--stimulus', 'absent.csv'], 'error: absent.csv cannot be used: '],
     ['a single lane', ['--lanes', '1'], "error: option '--lanes <n>' argument '1' is invalid."],
-    ['a length that is none', ['--cycles', 'many'], "error: option '--cycles <n>'"],
     ['a seed that is none', ['--seed', 'oak'], "error: option '--seed <seed>'"],
     ['an unknown clock', ['--clock', 'tick=4'], 'error: --clock: '],
     ['a picture in no folder', ['--picture', 'no/a.svg'], 'error: no/a.svg cannot be written: '],

@@ -56,7 +56,8 @@ describe('the Johnson counter', () => {
 
   // 0 into the first bit also where the last is 0 and the one before it is 1.
   it('with a gate that corrects it comes to its cycle from every state', async () => {
-    const text = plain.replace('q2 = DFF(q1)', 'q2 = DFF(c)') + ' e = OR(q0, q2) c = AND(q1, e)';
+    const corrected = plain.replace('q2 = DFF(q1)', 'q2 = DFF(c)');
+    const text = `${corrected} e = OR(q0, q2) c = AND(q1, e)`;
     const design = designOf(circuitFrom(text, 'johnson.bench'));
     await onEachEngine(design, 'zero', (engine, name) => {
       for (let state = 0; state < 16; state++) {

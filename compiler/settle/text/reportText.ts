@@ -24,8 +24,7 @@ const sections: Readonly<Record<Verdict, Section>> = {
   },
   agreed: {
     title: 'pessimistic x',
-    meaning: (elements) =>
-      `x with three values; all lanes agree ${fromText(latest(elements, agreedAfter))}`,
+    meaning: (elements) => `x, though all lanes agree ${fromText(latest(elements, agreedAfter))}`,
     rows: (elements) => rowsByCycle(elements, agreedAfter),
     most: 8,
   },

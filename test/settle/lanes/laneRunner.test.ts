@@ -81,23 +81,23 @@ function holdsFor(
 }
 
 describe('each lane does what an engine does from the same power-up', () => {
-  it('with registers on one edge', () => holdsFor({}, 40));
+  it('with registers on one edge', () => holdsFor({}, 20));
   it('with asynchronous set and reset, latches and gated clocks', () =>
-    holdsFor({ clocking: 'gated', latches: true, asynchronous: true }, 30));
-  it('with divided clocks', () => holdsFor({ clocking: 'divided', latches: true }, 30));
+    holdsFor({ clocking: 'gated', latches: true, asynchronous: true }, 20));
+  it('with divided clocks', () => holdsFor({ clocking: 'divided', latches: true }, 15));
   it('with combinational loops, of which some never settle', () =>
-    holdsFor({ loops: true, latches: true, asynchronous: true, maxGates: 25 }, 30));
+    holdsFor({ loops: true, latches: true, asynchronous: true, maxGates: 20 }, 15));
   it('as the reference runs it', () =>
-    holdsFor({ loops: true, clocking: 'edges', asynchronous: true }, 30, undefined, 'reference'));
+    holdsFor({ loops: true, clocking: 'edges', asynchronous: true }, 12, undefined, 'reference'));
   it('with three values', () =>
-    holdsFor({ unknowns: true, asynchronous: true }, 20, () => ({ threeValued: true })));
+    holdsFor({ unknowns: true, asynchronous: true }, 12, () => ({ threeValued: true })));
 
   it('with clocks each at its own pace', () => {
     const timings = [
       { port: 'clk', period: 4, offset: 1 },
       { port: 'clk2', period: 6, offset: 0 },
     ];
-    holdsFor({ clocking: 'twoClocks', latches: true }, 30, (circuit) => {
+    holdsFor({ clocking: 'twoClocks', latches: true }, 20, (circuit) => {
       const clocks = findClockPorts(circuit).ports.map(({ name }) => name);
       const known = timings.filter(({ port }) => clocks.includes(port));
       return known.length > 0 ? { timings: known } : {};
@@ -109,7 +109,7 @@ describe('each lane does what an engine does from the same power-up', () => {
       fc.property(randomBanks(), fc.nat(1e6), (circuit, seed) =>
         expectLanesAsEngine(circuit, {}, seed, 5),
       ),
-      { seed: SEED, numRuns: 25 },
+      { seed: SEED, numRuns: 12 },
     );
   });
 

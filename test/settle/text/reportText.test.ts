@@ -69,7 +69,7 @@ describe('a report as text', () => {
       '6 cycles of stimulus, then 4 with the inputs held',
       '',
       'known              4   after at most 3 cycles',
-      'pessimistic x      1   x with three values; all lanes agree after at most 2 cycles',
+      'pessimistic x      1   x, though all lanes agree after at most 2 cycles',
       'power-up decides   3   different in some lanes',
       '',
       'unknown bits       no change after 3 cycles',
