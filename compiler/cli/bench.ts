@@ -4,9 +4,11 @@ import { benchDesign } from '../report/bench.js';
 import { EngineDisagreement } from '../report/benchAgreement.js';
 import { type NativeChoice, nativeChoices } from '../report/benchOptions.js';
 import { benchText } from '../report/benchText.js';
-import { addNetlistOptions, loadDesign, type NetlistOptions } from './netlists.js';
+import { addClockOption, type ClockOptions, timedDesign } from './clockOption.js';
+import { addNetlistOptions, loadCircuit, type NetlistOptions } from './netlists.js';
+import { printDiagnostics } from './printDiagnostics.js';
 
-interface BenchCommandOptions extends NetlistOptions {
+interface BenchCommandOptions extends NetlistOptions, ClockOptions {
   readonly json?: true;
   readonly seconds: number;
   readonly native: NativeChoice;
@@ -14,7 +16,7 @@ interface BenchCommandOptions extends NetlistOptions {
 
 /** The verb `bench`: speed of generated code beside the interpreters and native C. */
 export function benchCommand(): Command {
-  return addNetlistOptions(new Command('bench'))
+  return addClockOption(addNetlistOptions(new Command('bench')))
     .description('Measures generated code beside the interpreters and native C.')
     .option('--json', 'print the figures as JSON')
     .option('--seconds <number>', 'measured time of each engine', positive, 1)
@@ -40,9 +42,11 @@ Example:
 
 async function bench(
   files: string[],
-  { json, seconds, native, ...netlist }: BenchCommandOptions,
+  { json, seconds, native, clock, ...netlist }: BenchCommandOptions,
 ): Promise<void> {
-  const design = await loadDesign(files, netlist);
+  const { circuit, found } = await loadCircuit(files, netlist);
+  const design = timedDesign(circuit, { ...(clock && { clock }) });
+  printDiagnostics(found);
   try {
     const result = await benchDesign(design, { seconds, native, onProgress: tell });
     process.stdout.write(`${json ? JSON.stringify(result, null, 2) : benchText(result)}\n`);

@@ -2,12 +2,10 @@ import { readFileSync } from 'node:fs';
 import { readFile } from 'node:fs/promises';
 import { type Command, InvalidArgumentError } from 'commander';
 import type { Circuit } from '../circuit/circuit.js';
-import { type CompileOptions, type Design, designOf } from '../compile.js';
 import { type Diagnostic, Diagnostics, InputError } from '../diagnostics/diagnostics.js';
 import { Source } from '../diagnostics/source.js';
 import { readNetlist } from '../read/readNetlist.js';
 import { includeReader } from '../read/verilog/includes.js';
-import { printDiagnostics } from './printDiagnostics.js';
 
 /** The options that every verb which reads netlists has. */
 export interface NetlistOptions {
@@ -71,17 +69,6 @@ export async function loadCircuit(
   diagnostics.throwIfErrors();
   if (circuit === undefined) throw new InputError(diagnostics.list);
   return { circuit, found: diagnostics.list };
-}
-
-/** Reads netlists into a design and prints what reading had to say on stderr. */
-export async function loadDesign(
-  files: readonly string[],
-  options: NetlistOptions,
-  compile: CompileOptions = {},
-): Promise<Design> {
-  const { circuit, found } = await loadCircuit(files, options);
-  printDiagnostics(found);
-  return designOf(circuit, compile);
 }
 
 async function readSource(path: string, diagnostics: Diagnostics): Promise<Source | undefined> {

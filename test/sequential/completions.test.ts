@@ -181,5 +181,6 @@ describe('what a three-valued run knows holds however the unknown is filled in',
 
   it.each(clockings)('with registers clocked as %s', (clocking) => holds({ ...all, clocking }, 50));
   it.each(clockings)('with combinational loops and registers clocked as %s', (clocking) =>
-    holds({ ...all, clocking, loops: true, maxGates: 8 }, 12));
+    holds({ ...all, clocking, loops: true, maxGates: 8 }, 12),
+  );
 });
