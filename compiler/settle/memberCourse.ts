@@ -20,7 +20,7 @@ export class MemberCourse {
   }
 
   /** Takes down the members after `after` cycles; call it for each number of cycles in turn. */
-  note(after: number, members: Iterable<number> & { readonly length: number }): void {
+  note(after: number, members: readonly number[]): void {
     for (const member of members) this.last[member] = after;
     let hasChanged = false;
     for (let i = 0; i < this.last.length; i++) {

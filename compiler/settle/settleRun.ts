@@ -27,7 +27,8 @@ export class SettleRun {
   state: Uint8Array;
   readonly #engine: BytecodeEngine;
   readonly #unknownState: Moving<Uint8Array>;
-  /** A stimulus row of the three-valued run, of which no bit is x. */
+  /** Words of a two-valued row, and a three-valued one of which no bit is x. */
+  readonly #words: number;
   readonly #row: Uint32Array;
 
   /** Lane i starts at `powerUpState(circuit, 'random', seed + i)`. */
@@ -35,6 +36,7 @@ export class SettleRun {
     const { circuit, layout, schedule } = design;
     const threeValued = { ...layout, threeValued: true };
     this.#engine = new BytecodeEngine(programsOf({ ...design, layout: threeValued }), threeValued);
+    this.#words = layout.inputs.words;
     this.#row = new Uint32Array(rowStride(layout.inputs, true));
     this.runner = new LaneRunner(programsOf(design), layout, lanes, (lane) =>
       powerUpState(circuit, 'random', seed + BigInt(lane)),
@@ -58,7 +60,7 @@ export class SettleRun {
    * that the row is the same as the one before and will stay so.
    */
   run(rows: Uint32Array, at: number, isHeld: boolean): void {
-    const row = rows.subarray(at, at + this.#row.length / 2);
+    const row = rows.subarray(at, at + this.#words);
     this.#row.set(row);
     this.#engine.run(1, this.#row, 0, undefined);
     this.state = this.#engine.state();

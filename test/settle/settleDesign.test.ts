@@ -292,6 +292,9 @@ describe('a verdict', () => {
     // Only lanes with q at 0 are left.
     expect(q).toMatchObject({ verdict: 'agreed', value: 0 });
     expect(r).toMatchObject({ verdict: 'agreed', value: 1 });
+    const last = ends.find((lane) => !ends.includes(lane + 1))!;
+    const one = await settled(inverter, { lanes: 2, seed: last });
+    expect(byName(one).q).toEqual({ name: 'q', kind: 'register', verdict: 'undecided' });
     const alone = await settled(
       smallCircuit({ inputs: [], outputs: ['r'], gates: { r: 'not r' } }),
     );
