@@ -33,10 +33,10 @@ async function holdsFor(options: RandomCircuitOptions, threeValued: boolean, num
 }
 
 describe('the engines agree on random circuits', () => {
-  it('with registers on one edge', () => holdsFor({}, false, 150));
+  it('with registers on one edge', () => holdsFor({}, false, 100));
   it('with wide ports and many gates', () =>
     holdsFor({ maxInputs: 8, maxWidth: 40, maxRegisters: 40, maxGates: 300 }, false, 40));
-  it('with asynchronous set and reset', () => holdsFor({ asynchronous: true }, false, 300));
+  it('with asynchronous set and reset', () => holdsFor({ asynchronous: true }, false, 150));
   it('with registers on both edges', () => holdsFor({ clocking: 'edges' }, false, 100));
   it('with gated clocks and latches', () =>
     holdsFor({ clocking: 'gated', latches: true, asynchronous: true }, false, 100));
@@ -45,12 +45,12 @@ describe('the engines agree on random circuits', () => {
   it('with banks of registers', () =>
     fc.assert(fc.asyncProperty(randomBanks(), fc.boolean(), fc.nat(1e6), expectAgreement), {
       seed: SEED,
-      numRuns: 150,
+      numRuns: 80,
     }));
   it('with combinational loops', () =>
-    holdsFor({ loops: true, latches: true, asynchronous: true, maxGates: 25 }, false, 200));
+    holdsFor({ loops: true, latches: true, asynchronous: true, maxGates: 25 }, false, 100));
   it('with combinational loops and three values', () =>
-    holdsFor({ loops: true, unknowns: true, maxGates: 15 }, true, 200));
+    holdsFor({ loops: true, unknowns: true, maxGates: 15 }, true, 100));
   it('with gated clocks and three values', () =>
     holdsFor({ clocking: 'gated', latches: true, asynchronous: true }, true, 100));
   it('with divided clocks and three values', () =>

@@ -41,13 +41,13 @@ async function measure(folder: string): Promise<ReadingResult> {
   const bytes = [...files, join(folder, primitivesFile)]
     .map((file) => statSync(file).size)
     .reduce((sum, size) => sum + size);
-  const all = [];
+  const all: Awaited<ReturnType<typeof readApart>>[] = [];
   for (let i = 1; i <= readings; i++) {
     say(`reading it, ${i} of ${readings}`);
     all.push(await readApart(files));
   }
-  const best = (valueOf: (reading: (typeof all)[number]) => number): number =>
-    Math.min(...all.map(valueOf));
+  const best = (figureOf: (reading: (typeof all)[number]) => number): number =>
+    Math.min(...all.map(figureOf));
   const seconds = best((each) => each.seconds);
   const processorSeconds = best((each) => each.processorSeconds);
   const peakBytes = best((each) => each.used.peakBytes);

@@ -68,7 +68,8 @@ async function settle(files: string[], options: SettleOptions): Promise<void> {
   const report = await settleDesign(design, { ...options, ...stimulusOf(design, options) });
   if (options.picture !== undefined) writePicture(options.picture, settlePicture(report));
   printDiagnostics(found);
-  const rerun = rerunCommand(files, options, report.cycles);
+  // The words of the command line behind the verb.
+  const rerun = rerunCommand(process.argv.slice(3), report.cycles);
   const text = options.json
     ? JSON.stringify({ ...report, rerun }, null, 2)
     : reportText(report, rerun);
@@ -85,18 +86,23 @@ function stimulusOf(
   return { stimulus: [], notes: layout.inputs.bits > 0 ? [held] : [] };
 }
 
-/** The command that runs one lane again, up to the seed, for a shell as in POSIX.1. */
-function rerunCommand(files: readonly string[], options: SettleOptions, cycles: number): string {
-  const { top, define = new Map(), include = [], clock = [], stimulus } = options;
-  const given = [
-    ...(top === undefined ? [] : ['--top', top]),
-    ...[...define].flatMap(([name, text]) => ['--define', text === '' ? name : `${name}=${text}`]),
-    ...include.flatMap((folder) => ['--include', folder]),
-    ...clock.flatMap(({ port, period, offset }) => ['--clock', `${port}=${period}@${offset}`]),
-    ...(stimulus === undefined ? [] : ['--stimulus', stimulus]),
-  ];
+/** Options of this verb alone that take a value. */
+const OWN = ['--cycles', '--lanes', '--seed', '--picture'];
+
+/**
+ * The command that runs one lane again, up to the seed, for a shell as in POSIX.1: what was asked
+ * for on the command line, so that all that makes the netlist stays the same.
+ */
+function rerunCommand(words: readonly string[], cycles: number): string {
+  const kept = words.filter(
+    (word, i) =>
+      word !== '--json' &&
+      !OWN.includes(word) &&
+      !OWN.includes(words[i - 1] ?? '') &&
+      !OWN.some((option) => word.startsWith(`${option}=`)),
+  );
   const length = ['--cycles', `${cycles}`];
-  return ['clockstride', 'run', ...files, ...given, ...length, '--power-up', 'random', '--seed']
+  return ['clockstride', 'run', ...kept, ...length, '--power-up', 'random', '--seed']
     .map(quoted)
     .join(' ');
 }

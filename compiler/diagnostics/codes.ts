@@ -157,6 +157,10 @@ export const codeTable = {
     'A constant select lies outside the declaration; it reads as x and writes nothing.',
     'Mend the numbers.',
   ),
+  'initial-delayed': warning(
+    'An `initial` waits; what follows does not happen at power-up and is left out.',
+    'Assign power-up values before the first delay; let input ports bring later changes.',
+  ),
   'task-ignored': note(
     'A system task that prints or steers a simulation has no meaning in a circuit.',
     'Nothing needs to be done.',

@@ -1,4 +1,5 @@
-import type { NameId } from './names.js';
+/** Index of a name in a `NameTable`; 0 is the empty name. */
+export type NameId = number;
 
 // How many bytes of names are made a string at once where names are asked for in their order, and
 // how far apart two names may stand for that.

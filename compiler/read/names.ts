@@ -1,7 +1,6 @@
-import { NameTexts } from './nameTexts.js';
+import { type NameId, NameTexts } from './nameTexts.js';
 
-/** Index of a name in a `NameTable`; 0 is the empty name. */
-export type NameId = number;
+export type { NameId };
 
 /** The hash that `intern` computes, of no bytes. */
 export const EMPTY_HASH = 0x811c9dc5 | 0;

@@ -85,11 +85,11 @@ describe('settle', () => {
 
   it('says how to run a lane again, with all options that make the netlist', async () => {
     const { stdout } = await folder.run(
-      ...['settle', 'block.v', '--top', 'block', '--define', 'A=b c', '--include', '.'],
-      ...['--clock', 'clk=4@1', '--cycles', '3'],
+      ...['settle', '--lanes', '40', '--top', 'block', 'block.v', '--define', "A=b'c"],
+      ...['--seed=3', '--clock', 'clk=4@1', '--cycles', '3', '--picture', 'again.svg'],
     );
     expect(stdout).toMatch(
-      /^lane \d+ again: clockstride run block\.v --top block --define 'A=b c' --include \. --clock clk=4@1 --cycles 3 --power-up random --seed \d+$/m,
+      /^lane \d+ again: clockstride run --top block block\.v --define 'A=b'\\''c' --clock clk=4@1 --cycles 3 --power-up random --seed \d+$/m,
     );
     expect(stdout).toContain('note: all inputs are held at 0; use --stimulus to drive them');
   });

@@ -5,18 +5,23 @@ import type { Parser } from './parser.js';
 import type { Expression, Strength } from './syntax.js';
 import { Token } from './tokens.js';
 
-/** Reads and sets aside `#` delay or `#(` delays `)`, if one comes (clause 7.14). */
-export function skipDelay(p: Parser): void {
-  if (!p.accept(Token.Hash)) return;
-  if (!p.is(Token.LeftParen)) {
-    parseDelayValue(p);
-    return;
-  }
+/**
+ * Reads and sets aside `#` delay or `#(` delays `)`, if one comes (clause 7.14). Returns whether it
+ * is one that takes time: any but a plain 0.
+ */
+export function skipDelay(p: Parser): boolean {
+  if (!p.accept(Token.Hash)) return false;
+  if (!p.is(Token.LeftParen)) return takesTime(parseDelayValue(p));
   p.tokens.next();
-  do parseMinTypMax(p);
+  let takes = false;
+  do takes = takesTime(parseMinTypMax(p)) || takes;
   while (p.accept(Token.Comma));
   p.expect(Token.RightParen);
+  return takes;
 }
+
+const takesTime = (delay: Expression): boolean =>
+  delay.kind !== 'number' || delay.value !== 0n || delay.unknown !== 0n;
 
 /** delay_value ::= number | name, without parentheses */
 export function parseDelayValue(p: Parser): Expression {

@@ -85,17 +85,17 @@ function parseAssignFrom(p: Parser, target: Expression): Statement {
   const blocking = p.is(Token.Equals);
   if (!blocking && !p.is(Token.LessEqual)) p.fail("'=' or '<=' after the target");
   p.tokens.next();
-  const waits = skipInnerTiming(p);
+  const delayed = skipDelay(p);
+  const waits = skipInnerEvent(p);
   const value = parseExpression(p);
   p.expect(Token.Semicolon, "';' after the assignment");
   const { lastEnd: end } = p.tokens;
   if (waits) return { kind: 'procedural', keyword: '@', start, end };
-  return { kind: 'assign', blocking, target, value, start, end };
+  return { kind: 'assign', blocking, ...(delayed && { delayed }), target, value, start, end };
 }
 
-/** A delay or an event control inside of an assignment; true for an event control. */
-function skipInnerTiming(p: Parser): boolean {
-  if (p.is(Token.Hash)) skipDelay(p);
+/** An event control inside of an assignment; false where there is none. */
+function skipInnerEvent(p: Parser): boolean {
   const repeats = p.accept(Keyword.repeat);
   if (repeats) parseCondition(p);
   if (!repeats && !p.is(Token.At)) return false;

@@ -216,8 +216,10 @@ function parseEventStatement(p: Parser): Statement {
   return { kind: 'event', events, body, start, end: p.tokens.lastEnd };
 }
 
-/** `#` delay statement: the delay is set aside. */
+/** `#` delay statement */
 function parseDelayed(p: Parser): Statement {
-  skipDelay(p);
-  return parseStatement(p);
+  const { start } = p.tokens;
+  const takesTime = skipDelay(p);
+  const body = parseStatement(p);
+  return takesTime ? { kind: 'delay', body, start, end: p.tokens.lastEnd } : body;
 }

@@ -19,8 +19,16 @@ export interface Constant {
 export type Binding =
   | SignalBinding
   | MemoryBinding
-  | { readonly kind: 'parameter'; readonly value: Constant }
+  | ParameterBinding
   | { readonly kind: 'routine'; readonly syntax: RoutineItem; readonly scope: Scope };
+
+/** A parameter; its bits have the numbers of its declared range, else of `[width-1:0]`. */
+export interface ParameterBinding {
+  readonly kind: 'parameter';
+  readonly value: Constant;
+  readonly msb: number;
+  readonly lsb: number;
+}
 
 /** A net or variable with its nets; `nets[0]` is the rightmost bit. */
 export interface SignalBinding {
@@ -35,13 +43,15 @@ export interface SignalBinding {
   readonly nets: readonly NetId[];
 }
 
-/** An array of words: `reg [7:0] m [0:15]`, one entry of `words` per address from `low` on. */
+/** An array of words: `reg [7:0] m [0:15]` or of nets, one entry of `words` per address from `low` on. */
 export interface MemoryBinding {
   readonly kind: 'memory';
   readonly name: NameId;
   readonly msb: number;
   readonly lsb: number;
   readonly signed: boolean;
+  /** As in `SignalBinding`. */
+  readonly isVariable: boolean;
   readonly low: number;
   readonly high: number;
   readonly words: readonly (readonly NetId[])[];

@@ -17,7 +17,7 @@ export type {
 
 /**
  * The syntax tree of Verilog (IEEE 1364-2005), as far as netlists, cell models and synthesizable
- * code need it. What a zero-delay model sets aside (delays, strengths, specify blocks) is not in
+ * code need it. What a zero-delay model sets aside (lengths of delays, specify blocks) is not in
  * the tree. Names are ids in one table; places are positions in one source map.
  */
 export interface VerilogSyntax {
@@ -76,6 +76,8 @@ export type Statement =
       readonly events: readonly EventSyntax[] | undefined;
       readonly body: Statement;
     })
+  /** `#3 statement`, but for a delay that is plainly 0; its length is set aside. */
+  | (Placed & { readonly kind: 'delay'; readonly body: Statement })
   /** `wait (c) statement`. */
   | (Placed & { readonly kind: 'wait'; readonly condition: Expression; readonly body: Statement })
   | (Placed & { readonly kind: 'disable'; readonly path: readonly NameId[] })
@@ -83,10 +85,12 @@ export type Statement =
   | (Placed & { readonly kind: 'procedural'; readonly keyword: string })
   | (Placed & { readonly kind: 'null' });
 
-/** `target = value` or `target <= value`; an intra-assignment delay is set aside. */
+/** `target = value` or `target <= value`. */
 export interface AssignStatement extends Placed {
   readonly kind: 'assign';
   readonly blocking: boolean;
+  /** Set where a delay within it (`q = #3 a`) puts it off; the delay itself is set aside. */
+  readonly delayed?: true;
   readonly target: Expression;
   readonly value: Expression;
 }

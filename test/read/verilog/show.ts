@@ -96,7 +96,7 @@ export function showStatement(s: Statement, names: NameTable): string {
       return [`begin${name}`, ...declarations, ...s.body.map(inner), 'end'].join(' ');
     }
     case 'assign':
-      return `${show(s.target)}${s.blocking ? '=' : '<='}${show(s.value)};`;
+      return `${show(s.target)}${s.blocking ? '=' : '<='}${s.delayed ? '# ' : ''}${show(s.value)};`;
     case 'if': {
       const otherwise = s.whenFalse === undefined ? '' : ` else ${inner(s.whenFalse)}`;
       return `if(${show(s.condition)}) ${inner(s.whenTrue)}${otherwise}`;
@@ -118,6 +118,8 @@ export function showStatement(s: Statement, names: NameTable): string {
       return `${showPath(s.path, names)}(${s.arguments.map(show).join(',')});`;
     case 'event':
       return `@(${s.events?.map((event) => showEvent(event, names)).join(',') ?? '*'}) ${inner(s.body)}`;
+    case 'delay':
+      return `# ${inner(s.body)}`;
     case 'wait':
       return `wait(${show(s.condition)}) ${inner(s.body)}`;
     case 'disable':

@@ -45,8 +45,9 @@ export function lowerAlways(item: AlwaysItem, scope: Scope): void {
   }
 }
 
-// `always begin @(…) … end` says the same as `always @(…) …`.
+// `always begin @(…) … end` says the same as `always @(…) …`, and a delay in front adds nothing.
 function withoutBlocks(statement: Statement): Statement {
+  if (statement.kind === 'delay') return withoutBlocks(statement.body);
   if (statement.kind !== 'block' || statement.name !== 0) return statement;
   const [first, ...others] = statement.body;
   return first !== undefined && others.length === 0 ? withoutBlocks(first) : statement;

@@ -2,7 +2,8 @@ import type { SignalBinding } from '../scope.js';
 import type { Expression, Statement } from '../syntax.js';
 import { assignBits, blockingAt } from './assign.js';
 import { resize, unknownBits } from './bits.js';
-import type { CallExpression, Context, RoutineBinding } from './context.js';
+import type { CallExpression, Context, Exits, RoutineBinding } from './context.js';
+import { LATER, Sequence } from './exits.js';
 import { lowerAssigned } from './expressions.js';
 import { LocalScope } from './localScope.js';
 import { declareLocals, localVariable, rangeOfType } from './locals.js';
@@ -45,22 +46,34 @@ export function callFunction(expression: CallExpression, context: Context): Bits
   return bits;
 }
 
-/** Executes a call of a task: its body, then the assignments to outputs (clause 10.2). */
-export function callTask(statement: TaskCall, context: Context): void {
+/**
+ * Executes a call of a task: its body, then the assignments to outputs (clause 10.2). Returns the
+ * condition under which the task waits at power-up, as an exit of the whole `initial`.
+ */
+export function callTask(statement: TaskCall, context: Context): Exits | undefined {
   const routine = routineOf(statement, 'task', context);
-  if (routine === undefined) return;
+  if (routine === undefined) return undefined;
   const before = context.store.nextLocal;
   const inside = enterRoutine(routine, context);
   const given = bindArguments(routine, statement, inside, context);
-  if (given === undefined) return;
-  context.services.execute(routine.syntax.body, inside);
+  if (given === undefined) return undefined;
+  const later = context.services.execute(routine.syntax.body, inside)?.get(LATER);
+  const sequence = new Sequence(context);
+  if (sequence.goesOn(later === undefined ? undefined : new Map([[LATER, later]]))) {
+    assignOutputs(given, statement, context);
+  }
+  const exits = sequence.close();
+  context.store.forgetFrom(before);
+  return exits;
+}
+
+function assignOutputs(given: readonly Argument[], statement: TaskCall, context: Context): void {
   given.forEach(({ direction, variable }, i) => {
     if (direction === 'input') return;
     const bits = variable.nets.map((net) => context.store.read(net));
     const target = statement.arguments[i]!;
     assignBits(target, bits, variable.signed, context, blockingAt(target.start));
   });
-  context.store.forgetFrom(before);
 }
 
 function routineOf(

@@ -3,6 +3,9 @@ import type { NameId } from '../../names.js';
 import type { Context, Exits } from './context.js';
 import type { Logic } from './logic.js';
 
+/** Stands among the names of blocks that are left for a whole `initial`, which nothing closes. */
+export const LATER: NameId = -1;
+
 /** The exits of one branch out of two: of the first where `condition` is 1. */
 export function mergeExits(
   condition: NetId,

@@ -6,7 +6,8 @@ import { powerUpContext } from './process.js';
 
 /**
  * Executes an `initial` whose assignments are constants, and adds what it leaves in variables to
- * `scope.shared.initialValues`. Bits left at x get no value.
+ * `scope.shared.initialValues`. Bits left at x get no value. What follows a delay or an event
+ * control happens later than power-up; it is left out with a warning.
  */
 export function lowerInitial(item: Extract<Item, { kind: 'initial' }>, scope: Scope): void {
   const { initialValues } = scope.shared;

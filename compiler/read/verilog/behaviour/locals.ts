@@ -110,7 +110,7 @@ function localMemory(
   const low = Math.min(range.msb, range.lsb);
   const high = Math.max(range.msb, range.lsb);
   const words = Array.from({ length: high - low + 1 }, () => localBits(msb, lsb, context));
-  return { kind: 'memory', name, msb, lsb, signed, low, high, words };
+  return { kind: 'memory', name, msb, lsb, signed, isVariable: true, low, high, words };
 }
 
 function declareParameters(item: ParameterItem, scope: LocalScope, context: Context): void {
@@ -123,6 +123,8 @@ function declareParameters(item: ParameterItem, scope: LocalScope, context: Cont
     const typed = range !== undefined || item.signed || item.type !== undefined;
     const signed = typed ? item.signed || item.type === 'integer' : constant.signed;
     const bits = resize(bitsOf(constant, constant.width, logic), width, constant.signed, logic);
-    scope.add(name, { kind: 'parameter', value: { width, signed, ...knownOf(bits, logic)! } });
+    const { msb, lsb } = range ?? { msb: width - 1, lsb: 0 };
+    const exact = { width, signed, ...knownOf(bits, logic)! };
+    scope.add(name, { kind: 'parameter', value: exact, msb, lsb });
   }
 }

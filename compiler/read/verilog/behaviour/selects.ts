@@ -128,9 +128,9 @@ function vectorOf(base: NameExpression | SelectExpression, context: Context): Ve
     return { width: word.length, msb, lsb, at: (i) => word[i]! };
   }
   if (base.kind === 'name' && binding?.kind === 'parameter') {
-    const { value } = binding;
+    const { value, msb, lsb } = binding;
     const bits = bitsOf(value, value.width, context.logic);
-    return { width: value.width, msb: value.width - 1, lsb: 0, at: (i) => bits[i]! };
+    return { width: value.width, msb, lsb, at: (i) => bits[i]! };
   }
   if (base.kind === 'name' && binding?.kind === 'signal') {
     if (binding.isVector && mayRead(base, binding, context)) {
@@ -173,7 +173,7 @@ export function mayRead(
 /** Whether the context lets a signal be read and assigned. */
 export function isAccessible(binding: SignalBinding | MemoryBinding, { access }: Context): boolean {
   if (access === 'all') return true;
-  if (access === 'variables') return binding.kind === 'memory' || binding.isVariable;
+  if (access === 'variables') return binding.isVariable;
   const first = binding.kind === 'memory' ? binding.words[0]?.[0] : binding.nets[0];
   return (first ?? 0) < 0;
 }

@@ -10,6 +10,7 @@ import { LocalScope } from './localScope.js';
 import { declareLocals } from './locals.js';
 import { executeFor, executeRepeat, executeWhile } from './loops.js';
 import { refuse } from './names.js';
+import { isPowerUp, leaveForLater, putOffAssign } from './powerUp.js';
 import { type Placed, pathText } from './report.js';
 import { isSystemName } from './systemFunctions.js';
 import { executeSystemTask } from './systemTasks.js';
@@ -21,7 +22,16 @@ export function executeStatement(statement: Statement, context: Context): Exits 
     case 'block':
       return executeBlock(statement, context);
     case 'assign':
+      if (statement.delayed && isPowerUp(context)) return putOffAssign(statement, context);
       return executeAssign(statement, context, false);
+    case 'delay':
+      if (isPowerUp(context)) return leaveForLater(statement, 'this delay', context);
+      return context.services.execute(statement.body, context);
+    case 'event':
+    case 'wait':
+      if (isPowerUp(context)) return leaveForLater(statement, 'this wait', context);
+      refuseStatement(statement, context);
+      return undefined;
     case 'if':
       return executeIf(statement, context);
     case 'case':
@@ -33,8 +43,8 @@ export function executeStatement(statement: Statement, context: Context): Exits 
     case 'while':
       return executeWhile(statement, context);
     case 'callTask':
-      if (isSystemName(statement.path, context)) executeSystemTask(statement, context);
-      else callTask(statement, context);
+      if (!isSystemName(statement.path, context)) return callTask(statement, context);
+      executeSystemTask(statement, context);
       return undefined;
     case 'disable':
       return executeDisable(statement, context);

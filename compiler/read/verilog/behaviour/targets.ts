@@ -99,18 +99,29 @@ function regionOf(
     report(shared, 'target-invalid', expression, message);
     return undefined;
   }
-  if (binding.isVariable !== (kind === 'variable')) {
-    const message = binding.isVariable
-      ? `\`${text}\` is a variable, which only procedures assign; declare it as a wire`
-      : `\`${text}\` is a net, which procedures cannot assign; declare it as reg`;
-    report(shared, 'target-invalid', expression, message);
-    return undefined;
-  }
+  if (!isOfKind(binding, kind, expression, expression, context)) return undefined;
   if (mayAssign(expression, binding, context)) {
     const { msb, lsb, nets } = binding;
     return { width: nets.length, msb, lsb, places: [{ bits: nets, when: context.logic.one }] };
   }
   return undefined;
+}
+
+function isOfKind(
+  { isVariable }: SignalBinding | MemoryBinding,
+  kind: TargetKind,
+  named: NameExpression,
+  place: NameExpression | SelectExpression,
+  context: Context,
+): boolean {
+  if (isVariable === (kind === 'variable')) return true;
+  const { shared } = context.scope;
+  const text = pathText(shared, named.path);
+  const message = isVariable
+    ? `\`${text}\` is a variable, which only procedures assign; declare it as a wire`
+    : `\`${text}\` is a net, which procedures cannot assign; declare it as reg`;
+  report(shared, 'target-invalid', place, message);
+  return false;
 }
 
 // A constant function may change nothing but its own variables.
@@ -181,13 +192,8 @@ function wordRegion(
   if (base.kind !== 'name') return undefined;
   const memory = bindingOf(base, context);
   if (memory?.kind !== 'memory') return undefined;
+  if (!isOfKind(memory, kind, base, expression, context)) return { region: undefined };
   if (!mayAssign(base, memory, context)) return { region: undefined };
-  if (kind === 'net') {
-    const text = pathText(context.scope.shared, base.path);
-    const message = `\`${text}\` is a memory, which only procedures assign`;
-    report(context.scope.shared, 'target-invalid', expression, message);
-    return { region: undefined };
-  }
   const places = wordPlaces(memory, expression, context);
   const { msb, lsb } = memory;
   return { region: places && { width: Math.abs(msb - lsb) + 1, msb, lsb, places } };
@@ -204,8 +210,10 @@ function wordPlaces(
   if (index.kind === 'unknown') return [];
   if (index.kind === 'constant') {
     const bits = words[index.value - low];
-    if (bits === undefined) warnOutside(expression, low, high, context);
-    return bits === undefined ? [] : [{ bits, when: logic.one }];
+    if (bits !== undefined) return [{ bits, when: logic.one }];
+    warnOutside(expression, low, high, context);
+    const width = Math.abs(memory.msb - memory.lsb) + 1;
+    return [{ bits: new Array<undefined>(width).fill(undefined), when: logic.one }];
   }
   if (!withinMemoryLimit(memory, expression, context)) return undefined;
   const address = indexOf(index.bits, index.signed, low, high, logic);

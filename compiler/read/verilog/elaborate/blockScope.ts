@@ -7,6 +7,7 @@ import type {
   Constant,
   Elaboration,
   MemoryBinding,
+  ParameterBinding,
   Scope,
   SignalBinding,
 } from '../scope.js';
@@ -96,6 +97,23 @@ export class BlockScope implements Scope {
     return undefined;
   }
 
+  /**
+   * The vectors that a symbol stands for: a signal, or each word of an array, with the index that
+   * follows its name in a text. None for what has no nets.
+   */
+  *vectors(symbol: number): Iterable<{ readonly first: number; readonly index: string }> {
+    const { symbols } = this;
+    const kind = symbols.kind(symbol);
+    const value = symbols.value(symbol);
+    if (kind === SymbolKind.Signal) yield { first: value, index: '' };
+    if (kind !== SymbolKind.Memory) return;
+    const { first, low, high } = this.memories[value]!;
+    const width = symbols.width(symbol);
+    for (let at = low; at <= high; at++) {
+      yield { first: first + (at - low) * width, index: `[${at}]` };
+    }
+  }
+
   #binding(symbol: number): Binding | undefined {
     const known = this.#bindings?.get(symbol);
     if (known !== undefined) return known;
@@ -116,14 +134,18 @@ export class BlockScope implements Scope {
       case SymbolKind.Memory:
         return this.#memory(symbol);
       case SymbolKind.Parameter:
-        return value === NO_VALUE
-          ? undefined
-          : { kind: 'parameter', value: this.constants[value]! };
+        return value === NO_VALUE ? undefined : this.#parameter(symbol);
       case SymbolKind.Routine:
         return { kind: 'routine', syntax: this.routines[value]!, scope: this };
       default:
         return undefined;
     }
+  }
+
+  #parameter(symbol: number): ParameterBinding {
+    const { symbols } = this;
+    const value = this.constants[symbols.value(symbol)]!;
+    return { kind: 'parameter', value, msb: symbols.msb(symbol), lsb: symbols.lsb(symbol) };
   }
 
   #signal(symbol: number): SignalBinding {
@@ -143,6 +165,7 @@ export class BlockScope implements Scope {
 
   #memory(symbol: number): MemoryBinding {
     const { symbols } = this;
+    const flags = symbols.flags(symbol);
     const width = symbols.width(symbol);
     const { first, low, high } = this.memories[symbols.value(symbol)]!;
     const words: NetId[][] = [];
@@ -154,7 +177,8 @@ export class BlockScope implements Scope {
       name: symbols.name(symbol),
       msb: symbols.msb(symbol),
       lsb: symbols.lsb(symbol),
-      signed: (symbols.flags(symbol) & Flag.Signed) !== 0,
+      signed: (flags & Flag.Signed) !== 0,
+      isVariable: (flags & Flag.Variable) !== 0,
       low,
       high,
       words,

@@ -1,11 +1,12 @@
 import { NO_NET, netId } from '../../../circuit/ids.js';
 import type { Span } from '../../../diagnostics/source.js';
 import { bitList } from './blockNames.js';
+import type { BlockScope } from './blockScope.js';
 import type { ModuleBody } from './body.js';
 import { isWired, type NetClasses } from './defaults.js';
 import { wordSpan } from './messages.js';
 import { BUS_PART, type Origin } from './recording.js';
-import { NetClass, SymbolKind } from './symbols.js';
+import { NetClass } from './symbols.js';
 import { Drive } from './template.js';
 import type { Usage } from './usage.js';
 
@@ -48,27 +49,37 @@ function collectDrivers(body: ModuleBody, conflicts: ReadonlyMap<number, Origin[
 
 /** One message for each signal, however many of its bits are concerned. */
 function reportConflicts(body: ModuleBody, conflicts: Map<number, Origin[]>): void {
-  for (const { symbols } of body.blocks) {
-    for (let symbol = 0; symbol < symbols.count; symbol++) {
-      if (symbols.kind(symbol) !== SymbolKind.Signal) continue;
-      const first = symbols.value(symbol);
-      const width = symbols.width(symbol);
-      const bits: number[] = [];
-      let drivers: Origin[] | undefined;
-      for (let bit = 0; bit < width; bit++) {
-        const net = body.builder.find(netId(first + bit));
-        const found = conflicts.get(net);
-        if (found === undefined) continue;
-        conflicts.delete(net);
-        drivers ??= found;
-        bits.push(bit);
+  for (const block of body.blocks) {
+    for (let symbol = 0; symbol < block.symbols.count; symbol++) {
+      for (const vector of block.vectors(symbol)) {
+        reportVector(body, block, symbol, vector, conflicts);
       }
-      if (drivers === undefined) continue;
-      const name = body.text(symbols.name(symbol));
-      report(body, width === 1 ? name : `${name}${bitList(symbols, symbol, bits)}`, drivers);
     }
   }
   for (const drivers of conflicts.values()) report(body, 'a net without a name', drivers);
+}
+
+function reportVector(
+  body: ModuleBody,
+  { symbols }: BlockScope,
+  symbol: number,
+  { first, index }: { readonly first: number; readonly index: string },
+  conflicts: Map<number, Origin[]>,
+): void {
+  const width = symbols.width(symbol);
+  const bits: number[] = [];
+  let drivers: Origin[] | undefined;
+  for (let bit = 0; bit < width; bit++) {
+    const net = body.builder.find(netId(first + bit));
+    const found = conflicts.get(net);
+    if (found === undefined) continue;
+    conflicts.delete(net);
+    drivers ??= found;
+    bits.push(bit);
+  }
+  if (drivers === undefined) return;
+  const name = body.text(symbols.name(symbol)) + index;
+  report(body, width === 1 ? name : `${name}${bitList(symbols, symbol, bits)}`, drivers);
 }
 
 function report(body: ModuleBody, what: string, drivers: readonly Origin[]): void {

@@ -161,7 +161,7 @@ function declareMemory(
   body: ModuleBody,
   scope: BlockScope,
   declared: DeclaredName,
-  { range, flags }: Kind,
+  { range, flags, netClass }: Kind,
 ): void {
   const { name, start, dimensions } = declared;
   const end = nameEnd(body, declared);
@@ -187,7 +187,8 @@ function declareMemory(
   body.buildAt(start);
   const first = body.builder.declare(bits);
   const value = scope.memories.push({ first, low, high }) - 1;
-  scope.symbols.add({ name, kind: SymbolKind.Memory, value, start, end, flags, msb, lsb });
+  const { Memory } = SymbolKind;
+  scope.symbols.add({ name, kind: Memory, value, start, end, flags, netClass, msb, lsb });
 }
 
 function keepValue(

@@ -4,7 +4,7 @@ import { NO_NET, netId } from '../../../circuit/ids.js';
 import type { ModuleBody } from './body.js';
 import type { Boundary } from './ports.js';
 import type { Recording } from './recording.js';
-import { Flag, NetClass, SymbolKind } from './symbols.js';
+import { Flag, NetClass } from './symbols.js';
 import { Drive } from './template.js';
 import type { Usage } from './usage.js';
 
@@ -14,13 +14,15 @@ export type NetClasses = ReadonlyMap<number, number>;
 /** Collects the nets whose type says more than `wire`. */
 export function netClassesOf(body: ModuleBody): NetClasses {
   const classes = new Map<number, number>();
-  for (const { symbols } of body.blocks) {
+  for (const block of body.blocks) {
+    const { symbols } = block;
     for (let symbol = 0; symbol < symbols.count; symbol++) {
       const netClass = symbols.netClass(symbol);
-      if (netClass === NetClass.Plain || symbols.kind(symbol) !== SymbolKind.Signal) continue;
-      const first = symbols.value(symbol);
-      for (let bit = 0; bit < symbols.width(symbol); bit++) {
-        classes.set(body.builder.find(netId(first + bit)), netClass);
+      if (netClass === NetClass.Plain) continue;
+      for (const { first } of block.vectors(symbol)) {
+        for (let bit = 0; bit < symbols.width(symbol); bit++) {
+          classes.set(body.builder.find(netId(first + bit)), netClass);
+        }
       }
     }
   }

@@ -179,7 +179,7 @@ function bindGenvar(
   end: number,
 ): void {
   const index = constants.push(integerConstant(value)) - 1;
-  symbols.add({ name, kind: SymbolKind.Parameter, value: index, start, end });
+  symbols.add({ name, kind: SymbolKind.Parameter, value: index, start, end, msb: 31, lsb: 0 });
 }
 
 /** Case equality of two constants, each extended to the wider of the two widths. */

@@ -3,7 +3,7 @@ import type { Constant } from '../scope.js';
 import type { Item, ParameterItem } from '../syntax.js';
 import type { BlockScope } from './blockScope.js';
 import type { ModuleBody } from './body.js';
-import { converted, evaluateRange } from './constants.js';
+import { converted, evaluateRange, type Range } from './constants.js';
 import type { Overrides } from './overrides.js';
 import { NO_VALUE, SymbolKind } from './symbols.js';
 
@@ -27,28 +27,31 @@ export function bindParameters(
       const given = isReal(item) ? undefined : (override ?? evaluateConstant(value, scope));
       const constant = given && typed(given, type);
       const index = constant === undefined ? NO_VALUE : scope.constants.push(constant) - 1;
-      scope.symbols.add({ name, kind: SymbolKind.Parameter, value: index, start, end });
+      const { msb, lsb } = type?.range ?? { msb: (constant?.width ?? 1) - 1, lsb: 0 };
+      scope.symbols.add({ name, kind: SymbolKind.Parameter, value: index, start, end, msb, lsb });
     }
   }
 }
 
 interface ParameterType {
-  readonly width: number | undefined;
+  /** Undefined: the bits are numbered from 0, as many as the value has. */
+  readonly range: Range | undefined;
   readonly signed: boolean;
 }
 
 function parameterType(item: ParameterItem, scope: BlockScope): ParameterType | undefined {
-  if (item.type === 'integer') return { width: 32, signed: true };
-  if (item.type === 'time') return { width: 64, signed: false };
+  if (item.type === 'integer') return { range: { msb: 31, lsb: 0 }, signed: true };
+  if (item.type === 'time') return { range: { msb: 63, lsb: 0 }, signed: false };
   const range = item.range && evaluateRange(item.range, scope);
   if (range === undefined && !item.signed) return undefined;
-  const width = range && Math.abs(range.msb - range.lsb) + 1;
-  return { width, signed: item.signed };
+  return { range, signed: item.signed };
 }
 
 function typed(constant: Constant, type: ParameterType | undefined): Constant {
   if (type === undefined) return constant;
-  return converted(constant, type.width ?? constant.width, type.signed);
+  const { range, signed } = type;
+  const width = range === undefined ? constant.width : Math.abs(range.msb - range.lsb) + 1;
+  return converted(constant, width, signed);
 }
 
 const isReal = (item: ParameterItem): boolean => item.type === 'real' || item.type === 'realtime';

@@ -143,6 +143,7 @@ function declareBlocks(body: ModuleBody, scope: BlockScope, statement: Statement
     case 'while':
     case 'forever':
     case 'event':
+    case 'delay':
     case 'wait':
       declareBlocks(body, scope, statement.body);
       break;

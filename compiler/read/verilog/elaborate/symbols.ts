@@ -138,12 +138,12 @@ export class SymbolTable {
     this.#set(symbol, Field.Traits, others | (netClass << CLASS));
   }
 
-  /** Declared left index; 0 for a scalar. */
+  /** Declared left index, also of a parameter's bits; 0 for a scalar. */
   msb(symbol: number): number {
     return this.#get(symbol, Field.Msb) | 0;
   }
 
-  /** Declared right index; 0 for a scalar. */
+  /** Declared right index, also of a parameter's bits; 0 for a scalar. */
   lsb(symbol: number): number {
     return this.#get(symbol, Field.Lsb) | 0;
   }

@@ -32,7 +32,10 @@ export function reportUndriven(
   for (const scope of body.blocks) {
     const { symbols } = scope;
     for (let symbol = 0; symbol < symbols.count; symbol++) {
-      if (symbols.kind(symbol) === SymbolKind.Signal) reportSignal(body, scope, symbol, isOpen);
+      // A word of a memory that nothing ever writes is often meant so; one of an array of nets not.
+      const isMemory = symbols.kind(symbol) === SymbolKind.Memory;
+      if (isMemory && (symbols.flags(symbol) & Flag.Variable) !== 0) continue;
+      for (const vector of scope.vectors(symbol)) reportSignal(body, scope, symbol, vector, isOpen);
     }
   }
 }
@@ -61,14 +64,14 @@ function reportSignal(
   body: ModuleBody,
   { symbols }: BlockScope,
   symbol: number,
+  { first, index }: { readonly first: number; readonly index: string },
   isOpen: (net: number) => boolean,
 ): void {
-  const first = symbols.value(symbol);
   const width = symbols.width(symbol);
   const open: number[] = [];
   for (let bit = 0; bit < width; bit++) if (isOpen(first + bit)) open.push(bit);
   if (open.length === 0) return;
-  const name = body.text(symbols.name(symbol));
+  const name = body.text(symbols.name(symbol)) + index;
   const what = open.length === width ? name : `${name}${bitList(symbols, symbol, open)}`;
   const flags = symbols.flags(symbol);
   const cause =

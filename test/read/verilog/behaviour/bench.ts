@@ -95,7 +95,9 @@ function declare(item: Item, scope: ModuleScope, builder: CircuitBuilder): void 
   if (item.kind === 'parameter') {
     for (const { name, value } of item.values) {
       const constant = evaluateConstant(value, scope);
-      if (constant) scope.names.set(name, { kind: 'parameter', value: constant });
+      if (constant === undefined) continue;
+      const range = rangeOf(item.range, scope) ?? { msb: constant.width - 1, lsb: 0 };
+      scope.names.set(name, { kind: 'parameter', value: constant, ...range });
     }
   } else if (item.kind === 'function' || item.kind === 'task') {
     scope.names.set(item.name, { kind: 'routine', syntax: item, scope });
@@ -118,7 +120,8 @@ function declareSignals(item: DeclarationItem, scope: ModuleScope, builder: Circ
       const low = Math.min(bounds.msb, bounds.lsb);
       const high = Math.max(bounds.msb, bounds.lsb);
       const words = Array.from({ length: high - low + 1 }, word);
-      scope.names.set(name, { kind: 'memory', name, msb, lsb, signed, low, high, words });
+      const shape = { name, msb, lsb, signed, isVariable, low, high, words };
+      scope.names.set(name, { kind: 'memory', ...shape });
       continue;
     }
     const nets = word();

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import type { Circuit } from '../../../../compiler/circuit/circuit.js';
-import { circuitOf, netsOf, scopesOf, signalValue } from './reading.js';
+import { circuitOf, netsOf, reading, scopesOf, signalValue } from './reading.js';
 
 const constant = `module constant (y);
   parameter W = 8, VALUE = 3;
@@ -65,6 +65,67 @@ describe('parameters', () => {
     expect(['y', 'z', 'w'].map((name) => signalValue(circuit, name, {}))).toEqual([
       0xb, 0xff, 0xff,
     ]);
+  });
+
+  // The value 4'b1100 as P[0:3]: P[0] and P[1] are 1; as Q[4:1]: Q[4] and Q[3] are 1; as R[-2:1]:
+  // R[-2] and R[-1] are 1 (IEEE 1364-2005, clauses 4.10.1 and 5.2.1).
+  it('number their bits by the range that they declare', () => {
+    const circuit = circuitOf(`module t (input [2:0] i, output [9:0] y, z, output [3:0] w);
+      localparam [0:3] P = 4'b1100;
+      localparam [4:1] Q = 4'b1100;
+      parameter signed [-2:1] R = 4'b1100;
+      localparam PLAIN = 4'b1100;
+      localparam integer WIDE = 4'b1100;
+      localparam [9:0] ALL = {P[0], P[3], P[0:1], Q[4], Q[1], Q[4:3], R[-2], PLAIN[3]};
+      assign y = ALL;
+      assign z = {P[1+:2], P[2-:2], Q[2+:2], Q[3-:2], R[-1+:2]};
+      assign w = {P[i], Q[i], R[$signed({1'b0, i}) - 2], WIDE[i]};
+    endmodule`);
+    expect(signalValue(circuit, 'y', {})).toBe(0b1011_1011_11);
+    expect(signalValue(circuit, 'z', {})).toBe(0b10_10_10_10_10);
+    expect(signalValue(circuit, 'w', { i: 1 })).toBe(0b1010);
+    expect(signalValue(circuit, 'w', { i: 3 })).toBe(0b0101);
+  });
+
+  it('select moving parts by the range that they declare', () => {
+    const circuit = circuitOf(`module t (input [2:0] i, output [1:0] a, b, c, d);
+      localparam [0:3] P = 4'b1101;
+      localparam [4:1] Q = 4'b1101;
+      assign a = P[i+:2];
+      assign b = P[i-:2];
+      assign c = Q[i+:2];
+      assign d = Q[i-:2];
+    endmodule`);
+    const at = (i: number) => ['a', 'b', 'c', 'd'].map((name) => signalValue(circuit, name, { i }));
+    expect(at(1)).toEqual([0b10, 0b11, 0b01, 'x']);
+    expect(at(2)).toEqual([0b01, 0b10, 0b10, 0b01]);
+  });
+
+  it('keep their range under an override and inside functions', () => {
+    const circuit = circuitOf(`
+      module m #(parameter [0:3] P = 0) (output a, output [1:0] b);
+        assign a = P[0];
+        function [1:0] pick(input [2:0] i);
+          begin : inner
+            localparam [1:4] L = 4'b1000;
+            pick = {L[i], P[0]};
+          end
+        endfunction
+        assign b = pick(1);
+      endmodule
+      module t (output a, output [1:0] b); m #(.P(8'hf8)) u (a, b); endmodule`);
+    expect(signalValue(circuit, 'a', {})).toBe(1);
+    expect(signalValue(circuit, 'b', {})).toBe(0b11);
+  });
+
+  it('refuse a part against their range and warn of a bit outside of it', () => {
+    const { problems } = reading(`module t (output [1:0] a, output b);
+      localparam [0:3] P = 4'b1000;
+      localparam [4:1] Q = 4'b1000;
+      assign a = P[1:0];
+      assign b = Q[0];
+    endmodule`);
+    expect(problems).toEqual(['range-invalid P[1:0]@4', 'select-outside Q[0]@5']);
   });
 
   it('take the width and sign of an override where they declare none', () => {
