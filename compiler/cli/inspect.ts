@@ -1,12 +1,10 @@
-import { dirname } from 'node:path';
 import { Command } from 'commander';
 import { designOf } from '../compile.js';
 import { levelPlot } from '../report/inspect/levelPlot.js';
 import { inspectionPage, type Paint } from '../report/inspect/page.js';
-import { writeWhole } from '../report/inspect/writeWhole.js';
 import { inspect } from '../report/inspection.js';
-import { addNetlistOptions, loadCircuit, type NetlistOptions, reason } from './netlists.js';
-import { UsageError } from './usageError.js';
+import { addNetlistOptions, loadCircuit, type NetlistOptions } from './netlists.js';
+import { writePicture } from './writePicture.js';
 
 interface InspectOptions extends NetlistOptions {
   readonly json?: true;
@@ -31,23 +29,13 @@ Example:
     .action(async (files: string[], options: InspectOptions) => {
       const { circuit, found } = await loadCircuit(files, options);
       const inspection = inspect(designOf(circuit), found);
-      if (options.levelPlot !== undefined) writePlot(options.levelPlot, levelPlot(inspection));
+      if (options.levelPlot !== undefined) writePicture(options.levelPlot, levelPlot(inspection));
       const text = options.json
         ? JSON.stringify(inspection, null, 2)
         : inspectionPage(inspection, isColoured() ? coloured : undefined);
       process.stdout.write(`${text}\n`);
       if (inspection.problems.some(({ severity }) => severity === 'error')) process.exitCode = 1;
     });
-}
-
-function writePlot(path: string, plot: string): void {
-  try {
-    writeWhole(path, plot);
-  } catch (error) {
-    const isMissing = (error as NodeJS.ErrnoException).code === 'ENOENT';
-    const why = isMissing ? `there is no folder ${dirname(path)}` : reason(error);
-    throw new UsageError(`error: ${path} cannot be written: ${why}`);
-  }
 }
 
 // https://no-color.org

@@ -1,4 +1,4 @@
-import { Command, InvalidArgumentError, Option } from 'commander';
+import { Command, Option } from 'commander';
 import { readStimulus } from '../../runtime/node/index.js';
 import { heldStimulus, randomStimulus, type StimulusBlock } from '../../runtime/stream.js';
 import { type PowerUp, powerUpModes } from '../circuit/powerUp.js';
@@ -10,6 +10,7 @@ import { runDesign } from '../run/runDesign.js';
 import { summaryText } from '../run/runSummary.js';
 import { addClockOption, type ClockOptions, timedDesign } from './clockOption.js';
 import { addNetlistOptions, loadCircuit, type NetlistOptions } from './netlists.js';
+import { countArgument, seedArgument } from './numbers.js';
 import { printDiagnostics } from './printDiagnostics.js';
 import { UsageError } from './usageError.js';
 
@@ -34,8 +35,8 @@ export function runCommand(): Command {
     .addOption(
       new Option('--stimulus <file>', 'input values, a CSV row a cycle').conflicts('random'),
     )
-    .option('--random <seed>', 'fresh random bits for all inputs in every cycle', seed)
-    .option('--cycles <n>', 'how long; as long as the stimulus unless given', cycleCount)
+    .option('--random <seed>', 'fresh random bits for all inputs in every cycle', seedArgument)
+    .option('--cycles <n>', 'how long; as long as the stimulus unless given', countArgument)
     .option('--response <file>', 'write the outputs of every cycle as CSV')
     .option('--expect <file>', 'compare the outputs with this CSV; end at the first departure')
     .option('--all', 'with --expect: go on and list all departures')
@@ -47,7 +48,9 @@ export function runCommand(): Command {
       ).choices(powerUpModes),
     )
     .addOption(
-      new Option('--seed <seed>', 'seed of random power-up').argParser(seed).default(0n, '0'),
+      new Option('--seed <seed>', 'seed of random power-up')
+        .argParser(seedArgument)
+        .default(0n, '0'),
     )
     .addOption(new Option('--engine <name>', 'what runs it').choices(engineNames).default('wasm'))
     .option('--json', 'print the summary as JSON')
@@ -125,17 +128,4 @@ function stimulusOf(
     stimulus: heldStimulus(layout, cycles),
     notes: layout.inputs.bits > 0 ? [held] : [],
   };
-}
-
-function cycleCount(text: string): number {
-  const value = /^\d[\d_]*$/.test(text) ? Number(text.replaceAll('_', '')) : Number.NaN;
-  if (!Number.isSafeInteger(value) || value < 0 || text.trim() === '') {
-    throw new InvalidArgumentError('Give a whole number from 0 on.');
-  }
-  return value;
-}
-
-function seed(text: string): bigint {
-  if (!/^(\d+|0x[0-9a-f]+)$/i.test(text)) throw new InvalidArgumentError('Give a whole number.');
-  return BigInt(text);
 }

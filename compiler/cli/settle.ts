@@ -1,17 +1,16 @@
-import { dirname } from 'node:path';
 import { Command, InvalidArgumentError, Option } from 'commander';
 import { readStimulus } from '../../runtime/node/index.js';
 import type { StimulusBlock } from '../../runtime/stream.js';
 import type { Design } from '../compile.js';
-import { writeWhole } from '../report/inspect/writeWhole.js';
 import { settlePicture } from '../settle/picture/settlePicture.js';
 import { MOST_LANES, settleDesign } from '../settle/settleDesign.js';
 import { isAllKnown } from '../settle/settleReport.js';
 import { reportText } from '../settle/text/reportText.js';
 import { addClockOption, type ClockOptions, timedDesign } from './clockOption.js';
-import { addNetlistOptions, loadCircuit, type NetlistOptions, reason } from './netlists.js';
+import { addNetlistOptions, loadCircuit, type NetlistOptions } from './netlists.js';
+import { countArgument, seedArgument } from './numbers.js';
 import { printDiagnostics } from './printDiagnostics.js';
-import { UsageError } from './usageError.js';
+import { writePicture } from './writePicture.js';
 
 interface SettleOptions extends NetlistOptions, ClockOptions {
   readonly stimulus?: string;
@@ -30,7 +29,7 @@ export function settleCommand(): Command {
     .option(
       '--cycles <n>',
       'how long; unless given, the stimulus and then until nothing changes any more',
-      count,
+      countArgument,
     )
     .addOption(
       new Option('--lanes <n>', 'random power-ups to run side by side')
@@ -39,7 +38,7 @@ export function settleCommand(): Command {
     )
     .addOption(
       new Option('--seed <seed>', 'of lane 0; lane i has this seed + i')
-        .argParser(wholeNumber)
+        .argParser(seedArgument)
         .default(0n, '0'),
     )
     .option('--json', 'print everything as JSON')
@@ -110,31 +109,8 @@ function rerunCommand(words: readonly string[], cycles: number): string {
 const quoted = (word: string): string =>
   /^[\w@%+=:,./-]+$/.test(word) ? word : `'${word.replaceAll("'", "'\\''")}'`;
 
-function writePicture(path: string, picture: string): void {
-  try {
-    writeWhole(path, picture);
-  } catch (error) {
-    const isMissing = (error as NodeJS.ErrnoException).code === 'ENOENT';
-    const why = isMissing ? `there is no folder ${dirname(path)}` : reason(error);
-    throw new UsageError(`error: ${path} cannot be written: ${why}`);
-  }
-}
-
-function count(text: string): number {
-  const value = /^\d[\d_]*$/.test(text) ? Number(text.replaceAll('_', '')) : Number.NaN;
-  if (!Number.isSafeInteger(value)) {
-    throw new InvalidArgumentError('Give a whole number from 0 on.');
-  }
-  return value;
-}
-
 function laneCount(text: string): number {
-  const value = count(text);
+  const value = countArgument(text);
   if (value >= 2 && value <= MOST_LANES) return value;
   throw new InvalidArgumentError(`Give a number from 2 to ${MOST_LANES}.`);
-}
-
-function wholeNumber(text: string): bigint {
-  if (!/^(\d+|0x[0-9a-f]+)$/i.test(text)) throw new InvalidArgumentError('Give a whole number.');
-  return BigInt(text);
 }

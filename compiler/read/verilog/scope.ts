@@ -93,6 +93,20 @@ export interface Elaboration {
   readonly initialValues: Map<NetId, 0 | 1>;
 }
 
+/**
+ * What a name that is declared, but means nothing where it is used, is: a signal or parameter whose
+ * declaration comes after the constants that are worked out, or one whose declaration is faulty.
+ */
+export type Unusable =
+  | 'real'
+  | 'event'
+  | 'genvar'
+  | 'block'
+  | 'instance'
+  | 'signal'
+  | 'later'
+  | 'faulty';
+
 /** One instance of a module, or a generate or named block inside one. */
 export interface Scope {
   readonly shared: Elaboration;
@@ -102,6 +116,8 @@ export interface Scope {
    * it under a name of its own, the text `g[2]` with the index in decimal (`names.internText`).
    */
   resolve(path: readonly NameId[]): Binding | undefined;
+  /** Why a name does not resolve although it is declared; undefined where it is not. */
+  unusable?(name: NameId): Unusable | undefined;
   /**
    * The scope of a named block of statements that stands in an `always` or `initial` of this
    * scope, or in another such block; its declarations are made. Undefined if there is none, and

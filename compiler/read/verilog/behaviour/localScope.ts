@@ -1,11 +1,12 @@
 import type { NameId } from '../../names.js';
-import type { Binding, Elaboration, Scope } from '../scope.js';
+import type { Binding, Elaboration, Scope, Unusable } from '../scope.js';
 
 /** The names that a function, a task or a block inside one declares, before those outside. */
 export class LocalScope implements Scope {
   readonly shared: Elaboration;
   readonly #outer: Scope;
   readonly #names = new Map<NameId, Binding>();
+  readonly #refused = new Map<NameId, Unusable>();
 
   constructor(outer: Scope) {
     this.shared = outer.shared;
@@ -14,6 +15,15 @@ export class LocalScope implements Scope {
 
   add(name: NameId, binding: Binding): void {
     this.#names.set(name, binding);
+  }
+
+  /** Takes note of a name that is declared with a type that cannot be built. */
+  refuse(name: NameId, type: Unusable): void {
+    this.#refused.set(name, type);
+  }
+
+  unusable(name: NameId): Unusable | undefined {
+    return this.#refused.get(name) ?? this.#outer.unusable?.(name);
   }
 
   /** What this scope itself declares under a name. */

@@ -75,6 +75,7 @@ function localBits(msb: number, lsb: number, context: Context): NetId[] {
 function declareVariables(item: DeclarationItem, scope: LocalScope, context: Context): void {
   if (item.type === 'real' || item.type === 'realtime' || item.type === 'event') {
     refuse(context, item, `\`${item.type}\` has no bits; use reg or integer`);
+    for (const { name } of item.names) scope.refuse(name, item.type === 'event' ? 'event' : 'real');
     return;
   }
   const range = rangeOfType(item.type, item.range, context);

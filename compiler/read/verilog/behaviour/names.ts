@@ -1,5 +1,6 @@
+import type { DiagnosticCode } from '../../../diagnostics/codes.js';
 import type { NameId } from '../../names.js';
-import type { Binding } from '../scope.js';
+import type { Binding, Unusable } from '../scope.js';
 import type { Expression } from '../syntax.js';
 import type { Context } from './context.js';
 import { resolveCalled } from './localScope.js';
@@ -53,12 +54,41 @@ export function calledBinding(named: Named, context: Context): Binding | undefin
 
 function found(binding: Binding | undefined, named: Named, context: Context): Binding | undefined {
   if (binding !== undefined) return binding;
-  const { shared } = context.scope;
+  const { scope } = context;
+  const { shared } = scope;
   const text = pathText(shared, named.path);
-  const message = `\`${text}\` is not declared here; declare it or mend its spelling`;
-  report(shared, 'name-undeclared', named, message);
+  const reason = named.path.length === 1 ? scope.unusable?.(named.path[0]!) : undefined;
+  const [code, message] = reason === undefined ? unknown : unusable[reason];
+  report(shared, code, named, `\`${text}\` ${message}`);
   return undefined;
 }
+
+type Complaint = readonly [code: DiagnosticCode, message: string];
+
+const unknown: Complaint = [
+  'name-undeclared',
+  'is not declared here; declare it or mend its spelling',
+];
+
+const unusable: Readonly<Record<Unusable, Complaint>> = {
+  real: ['not-supported', 'is a real number, which has no bits; declare it as reg or integer'],
+  event: [
+    'not-supported',
+    'is a named event, which no circuit has; set a register for one cycle instead',
+  ],
+  genvar: [
+    'name-undeclared',
+    'is a genvar, which has a value only inside its generate loop; use it there, or an integer',
+  ],
+  block: ['name-undeclared', 'is a block, which has no value; name a signal in it'],
+  instance: ['name-undeclared', 'is an instance, which has no value; name a signal in it'],
+  signal: [
+    'constant-required',
+    'is a signal, but a constant is needed here; use literals and parameters',
+  ],
+  later: ['name-undeclared', 'is declared only after this; move its declaration up'],
+  faulty: ['name-undeclared', 'has no meaning, because its declaration is faulty; mend that first'],
+};
 
 /** Calls `visit` for each name that a part of the syntax tree reads or assigns. */
 export function forEachName(

@@ -10,13 +10,17 @@ import type {
   ParameterBinding,
   Scope,
   SignalBinding,
+  Unusable,
 } from '../scope.js';
-import type { RoutineItem } from '../syntax.js';
+import type { Item, RoutineItem } from '../syntax.js';
 import type { Recording } from './recording.js';
-import { Flag, NO_VALUE, SymbolKind, SymbolTable } from './symbols.js';
+import { Flag, REAL_VALUE, SymbolKind, SymbolTable } from './symbols.js';
+import { unusableName } from './unusableName.js';
 
 /** Width up to which the binding of a signal is made anew each time. */
 const NARROW = 4;
+
+const noItems: readonly Item[] = [];
 
 /** What the scopes of a module have in common. */
 export interface ScopeHost extends Elaboration {
@@ -50,6 +54,8 @@ export class BlockScope implements Scope {
   readonly constants: Constant[] = [];
   readonly routines: RoutineItem[] = [];
   readonly memories: MemoryShape[] = [];
+  /** Items whose names are being declared, for messages about those that are still unknown. */
+  pending: readonly Item[] = noItems;
   // Only what is worth keeping: most signals are narrow, and a netlist has a million of them.
   #bindings: Map<number, Binding> | undefined;
 
@@ -82,6 +88,14 @@ export class BlockScope implements Scope {
     const symbol = this.symbols.find(name);
     if (symbol < 0 || this.symbols.kind(symbol) !== SymbolKind.Block) return undefined;
     return this.shared.blocks[this.symbols.value(symbol)];
+  }
+
+  unusable(name: NameId): Unusable | undefined {
+    for (let scope: BlockScope | undefined = this; scope; scope = scope.parent) {
+      const reason = unusableName(scope, name);
+      if (reason !== undefined) return reason;
+    }
+    return undefined;
   }
 
   /** The meaning of `path[at] …` as a path that begins with a name of this very scope. */
@@ -134,7 +148,7 @@ export class BlockScope implements Scope {
       case SymbolKind.Memory:
         return this.#memory(symbol);
       case SymbolKind.Parameter:
-        return value === NO_VALUE ? undefined : this.#parameter(symbol);
+        return value >= REAL_VALUE ? undefined : this.#parameter(symbol);
       case SymbolKind.Routine:
         return { kind: 'routine', syntax: this.routines[value]!, scope: this };
       default:

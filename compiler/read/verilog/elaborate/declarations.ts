@@ -3,7 +3,7 @@ import type { DeclarationItem, DeclaredName } from '../syntax.js';
 import type { BlockScope } from './blockScope.js';
 import type { ModuleBody } from './body.js';
 import { evaluateRange, type Range } from './constants.js';
-import { Flag, NetClass, SymbolKind } from './symbols.js';
+import { Flag, NetClass, OtherName, SymbolKind } from './symbols.js';
 
 type DeclaredType = NonNullable<DeclarationItem['type']>;
 
@@ -98,7 +98,12 @@ function declareOther(
 ): void {
   if (!body.isFree(scope, name, start, end)) return;
   const kind = type === 'genvar' ? SymbolKind.Genvar : SymbolKind.Other;
-  scope.symbols.add({ name, kind, value: 0, start, end });
+  scope.symbols.add({ name, kind, value: otherNameOf(type), start, end });
+}
+
+function otherNameOf(type: DeclarationItem['type']): number {
+  if (type === 'event') return OtherName.Event;
+  return type === 'real' || type === 'realtime' ? OtherName.Real : OtherName.Faulty;
 }
 
 function declareNet(body: ModuleBody, scope: BlockScope, declared: DeclaredName, kind: Kind): void {
@@ -181,7 +186,8 @@ function declareMemory(
     body.report('not-supported', `array ${body.text(name)} ${problem}`, start, end);
   }
   if (problem !== undefined || dimension === undefined) {
-    scope.symbols.add({ name, kind: SymbolKind.Other, value: 0, start, end });
+    const value = OtherName.Faulty;
+    scope.symbols.add({ name, kind: SymbolKind.Other, value, start, end });
     return;
   }
   body.buildAt(start);

@@ -5,7 +5,7 @@ import type { GenerateBlock, Item } from '../syntax.js';
 import { BlockScope } from './blockScope.js';
 import type { ModuleBody } from './body.js';
 import { integerConstant, isTrue, numberOf } from './constants.js';
-import { SymbolKind } from './symbols.js';
+import { OtherName, SymbolKind } from './symbols.js';
 
 type Construct<Kind extends Item['kind']> = Extract<Item, { kind: Kind }>;
 
@@ -29,7 +29,7 @@ export function expandFor(
   const name = blockName(body, scope, item.body, number);
   const { start, end } = item;
   if (!checkGenvar(body, scope, item) || !body.isFree(scope, name, start, end)) return;
-  scope.symbols.add({ name, kind: SymbolKind.Other, value: 0, start, end });
+  scope.symbols.add({ name, kind: SymbolKind.Other, value: OtherName.Block, start, end });
   const before = body.workSoFar();
   let value = genvarValue(body, item, evaluateConstant(item.initial, scope));
   for (let turn = 0; value !== undefined; turn++) {

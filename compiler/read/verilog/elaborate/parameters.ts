@@ -5,7 +5,7 @@ import type { BlockScope } from './blockScope.js';
 import type { ModuleBody } from './body.js';
 import { converted, evaluateRange, type Range } from './constants.js';
 import type { Overrides } from './overrides.js';
-import { NO_VALUE, SymbolKind } from './symbols.js';
+import { NO_VALUE, REAL_VALUE, SymbolKind } from './symbols.js';
 
 /**
  * Gives the parameters among some items their values, in order: the override, or the value
@@ -26,7 +26,8 @@ export function bindParameters(
       // A real parameter only ever times something, which is set aside.
       const given = isReal(item) ? undefined : (override ?? evaluateConstant(value, scope));
       const constant = given && typed(given, type);
-      const index = constant === undefined ? NO_VALUE : scope.constants.push(constant) - 1;
+      const none = isReal(item) ? REAL_VALUE : NO_VALUE;
+      const index = constant === undefined ? none : scope.constants.push(constant) - 1;
       const { msb, lsb } = type?.range ?? { msb: (constant?.width ?? 1) - 1, lsb: 0 };
       scope.symbols.add({ name, kind: SymbolKind.Parameter, value: index, start, end, msb, lsb });
     }

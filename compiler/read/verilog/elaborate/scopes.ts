@@ -54,9 +54,12 @@ function declareNames(
   items: readonly Item[],
   overrides: Overrides,
 ): void {
+  const { pending } = scope;
+  scope.pending = items;
   bindRoutines(body, scope, items);
   bindParameters(body, scope, items, overrides);
   for (const item of items) if (item.kind === 'declaration') declare(body, scope, item);
+  scope.pending = pending;
 }
 
 const expandItems: ExpandItems = (body, scope, items) => {

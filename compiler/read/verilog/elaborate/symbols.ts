@@ -10,7 +10,7 @@ export const SymbolKind = {
   Signal: 0,
   /** Index into the scope's `memories`. */
   Memory: 1,
-  /** Index into the scope's `constants`, or `NO_VALUE`. */
+  /** Index into the scope's `constants`, `NO_VALUE` or `REAL_VALUE`. */
   Parameter: 2,
   /** Index into the scope's `routines`. */
   Routine: 3,
@@ -20,12 +20,18 @@ export const SymbolKind = {
   Instance: 5,
   /** Nothing: the loop's blocks hold the value as a parameter. */
   Genvar: 6,
-  /** Nothing: a name that is known but has no meaning here, such as an event. */
+  /** An `OtherName`: a name that is known but has no meaning here. */
   Other: 7,
 } as const;
 
-/** Value of a parameter that has none because of an error or because it is real. */
+/** Value of a parameter that has none because of an error. */
 export const NO_VALUE = 0xffffffff;
+
+/** Value of a real parameter. */
+export const REAL_VALUE = 0xfffffffe;
+
+/** What a name without a meaning was declared as. */
+export const OtherName = { Faulty: 0, Real: 1, Event: 2, Block: 3 } as const;
 
 /** Bits of a symbol's flags. */
 export const Flag = {

@@ -32,10 +32,13 @@ export function reportUndriven(
   for (const scope of body.blocks) {
     const { symbols } = scope;
     for (let symbol = 0; symbol < symbols.count; symbol++) {
-      // A word of a memory that nothing ever writes is often meant so; one of an array of nets not.
-      const isMemory = symbols.kind(symbol) === SymbolKind.Memory;
-      if (isMemory && (symbols.flags(symbol) & Flag.Variable) !== 0) continue;
-      for (const vector of scope.vectors(symbol)) reportSignal(body, scope, symbol, vector, isOpen);
+      const kind = symbols.kind(symbol);
+      if (kind === SymbolKind.Signal) {
+        reportSignal(body, scope, symbol, { first: symbols.value(symbol), index: '' }, isOpen);
+      } else if (kind === SymbolKind.Memory && (symbols.flags(symbol) & Flag.Variable) === 0) {
+        // Only of nets: a word of a memory that nothing ever writes is often meant so.
+        for (const word of scope.vectors(symbol)) reportSignal(body, scope, symbol, word, isOpen);
+      }
     }
   }
 }

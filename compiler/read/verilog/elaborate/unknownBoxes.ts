@@ -91,7 +91,8 @@ function canBeDriven(
   forEachTarget(expression, ({ path }) => {
     const binding = scope.resolve(path);
     count++;
-    canBe &&= binding?.kind === 'signal' && !binding.isVariable;
+    const hasNets = binding?.kind === 'signal' || binding?.kind === 'memory';
+    canBe &&= hasNets && !binding.isVariable;
   });
   return canBe && count > 0;
 }

@@ -54,6 +54,15 @@ describe('black boxes', () => {
     ]);
   });
 
+  it('without a definition drive words of an array of nets', () => {
+    const open = `module t (input a, output y); wire w [0:1];
+      missing u (.d(a), .q(w[1])); assign y = ~w[1];
+    endmodule`;
+    const { circuit } = boxed(open, 'missing');
+    expect(portsOf(circuit.inputs)).toEqual(['a', 'u.q']);
+    expect(signalValue(circuit, 'y', { 'u.q': 0 })).toBe(1);
+  });
+
   it('lie as deep as their instances, one after another', () => {
     const deep = `module box (input d, output q); endmodule
       module mid (input i, output o); box b (i, o); endmodule

@@ -10,7 +10,7 @@ import {
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterAll, describe, expect, it } from 'vitest';
-import { writeWhole } from '../../../compiler/report/inspect/writeWhole.js';
+import { writeWhole } from '../../compiler/report/writeWhole.js';
 
 const folder = mkdtempSync(join(tmpdir(), 'clockstride-whole-'));
 afterAll(() => rmSync(folder, { recursive: true }));
