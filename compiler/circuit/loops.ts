@@ -8,16 +8,16 @@ import { TarjanSearch } from './tarjan.js';
  * edge between. Latches count as transparent, and the asynchronous set and reset of a register
  * reach its output.
  *
- * A loop settles in rounds: its nets are evaluated one after another in net order, round after
- * round until a round changes nothing, starting from the values that they had before. Of these,
- * only the `kept` nets are read before they are evaluated, so they are what the loop remembers.
+ * A loop settles in rounds: its nets are evaluated one after another, round after round until a
+ * round changes nothing, starting from the values that they had before. Of these, only the `kept`
+ * nets are read before they are evaluated, so they are what the loop remembers.
  */
 export interface Loops {
   /** All kept nets, loop by loop: state beside that of registers and latches. */
   readonly keptNets: Uint32Array;
   /** Per net: the loop that it belongs to, or -1. */
   readonly loopOf: Int32Array;
-  /** The nets of each loop, in net order. */
+  /** The nets of each loop, in the order of evaluation. */
   readonly nets: readonly Uint32Array[];
   /** Of each loop, the gates that one of its nets reads before they are evaluated. */
   readonly kept: readonly Uint32Array[];
@@ -38,9 +38,10 @@ export function loopsOf(circuit: Circuit): Loops {
 // Strongly connected components of the settling logic.
 function findLoops(circuit: Circuit): Loops {
   const sources = new SettlingSources(circuit);
+  const reads = readCounts(circuit);
   const nets = new TarjanSearch(circuit.netCount, (net, i) => sources.at(net, i))
     .components()
-    .map((component) => Uint32Array.from(component).sort());
+    .map((component) => settlingOrder(sources, component, reads));
   const loopOf = new Int32Array(circuit.netCount).fill(-1);
   nets.forEach((members, loop) => {
     for (const net of members) loopOf[net] = loop;
@@ -56,13 +57,53 @@ function keptNets(
   members: Uint32Array,
 ): Uint32Array {
   const kept = new Set<number>();
+  const evaluated = new Set<number>();
   for (const net of members) {
     for (let i = 0, source = sources.at(net, 0); source !== -1; source = sources.at(net, ++i)) {
       const isInside = loopOf[source] === loopOf[net];
-      if (isInside && source >= net && isGate(circuit.kind[source]!)) kept.add(source);
+      if (isInside && !evaluated.has(source) && isGate(circuit.kind[source]!)) kept.add(source);
     }
+    evaluated.add(net);
   }
   return Uint32Array.from(kept).sort();
+}
+
+/**
+ * The nets of a loop in the order of their evaluation: depth first from the one that is read most
+ * (of several the lowest), each after what it reads as far as the loop allows. So an expression is
+ * whole before its target takes it, and what the loop remembers is what others look at.
+ */
+function settlingOrder(
+  sources: SettlingSources,
+  members: readonly number[],
+  reads: Uint32Array,
+): Uint32Array {
+  const open = new Set(members);
+  const order: number[] = [];
+  const first = members.reduce((a, b) =>
+    reads[a]! > reads[b]! || (reads[a] === reads[b] && a < b) ? a : b,
+  );
+  const path = [{ net: first, next: 0 }];
+  open.delete(first);
+  for (let top = path[0]; top !== undefined; top = path[path.length - 1]) {
+    const source = sources.at(top.net, top.next++);
+    if (source === -1) {
+      order.push(top.net);
+      path.pop();
+    } else if (open.delete(source)) path.push({ net: source, next: 0 });
+  }
+  return Uint32Array.from(order);
+}
+
+/** How often each net is read: by gates, by pins of registers and latches, and by output ports. */
+function readCounts({ netCount, fanin, registers, latches, outputs }: Circuit): Uint32Array {
+  const counts = new Uint32Array(netCount);
+  const pins = [registers.clock, registers.data, registers.set, registers.reset];
+  const latchPins = [latches.enable, latches.data, latches.set, latches.reset];
+  for (const nets of [fanin, ...pins, ...latchPins, ...outputs.map((port) => port.nets)]) {
+    for (const net of nets) if (net !== NO_NET) counts[net]!++;
+  }
+  return counts;
 }
 
 /** What a net depends on within one settling, one net after another. */

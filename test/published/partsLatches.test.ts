@@ -93,9 +93,12 @@ describe('the gated D latch', () => {
     // The second gate takes the first one's output for the inverse of d.
     'of four NAND gates': `
       nand (s_n, d, g), (r_n, s_n, g); nand (q, s_n, q_n), (q_n, r_n, q);`,
-    // The third term holds q while the enable goes from one of the others to the other.
     'of AND and NOR gates (74x75)': `
-      not (g_n, g), (q, q_n); and (a, d, g), (b, q, g_n), (c, d, q); nor (q_n, a, b, c);`,
+      not (g_n, g), (q, q_n); and (a, d, g), (b, q, g_n); nor (q_n, a, b);`,
+    'of NAND gates as a multiplexer': `
+      not (g_n, g), (q_n, q); nand (a, d, g), (b, q, g_n); nand (q, a, b);`,
+    // One assignment is one function: its terms do not change one after the other.
+    'of one expression': 'assign q = (g & d) | (~g & q); assign q_n = ~q;',
     'of a multiplexer': 'assign q = g ? d : q; assign q_n = ~q;',
   };
 

@@ -270,7 +270,7 @@ describe('a verdict', () => {
     );
     expect(report.elements.map(({ name, kind }) => [name, kind])).toEqual([
       ['l', 'latch'],
-      ['p', 'loop'],
+      ['q', 'loop'],
     ]);
     expect(report).toMatchObject({ registers: 0, latches: 1, loopNets: 1 });
   });

@@ -7,13 +7,17 @@ export interface EvaluationOrder {
   readonly levels: number;
   /** Per net: the loop it belongs to, or -1. */
   readonly loopOf: Int32Array;
-  /** The nets of loop l in net order: `loopNets[loopStart[l]] … loopNets[loopStart[l + 1] - 1]`. */
+  /** The nets of loop l by `place`: `loopNets[loopStart[l]] … loopNets[loopStart[l + 1] - 1]`. */
   readonly loopStart: Uint32Array;
   readonly loopNets: Uint32Array;
 }
 
 /** Orders the nets; a loop is a strongly connected component or a net that reads itself. */
-export function evaluationOrder(netCount: number, dependencies: Dependencies): EvaluationOrder {
+export function evaluationOrder(
+  netCount: number,
+  dependencies: Dependencies,
+  place: Uint32Array,
+): EvaluationOrder {
   const { order, componentOf, componentStart } = strongComponents(netCount, dependencies);
   const loopOf = new Int32Array(netCount).fill(-1);
   const loopStart = [0];
@@ -21,7 +25,7 @@ export function evaluationOrder(netCount: number, dependencies: Dependencies): E
   for (let c = 0; c + 1 < componentStart.length; c++) {
     const nets = order.subarray(componentStart[c]!, componentStart[c + 1]!);
     if (nets.length === 1 && !readsItself(nets[0]!, dependencies)) continue;
-    for (const net of nets.slice().sort()) {
+    for (const net of nets.slice().sort((a, b) => place[a]! - place[b]!)) {
       loopOf[net] = loopStart.length - 1;
       loopNets.push(net);
     }

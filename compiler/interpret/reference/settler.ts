@@ -27,7 +27,7 @@ const NO_LOOP = -2;
  *
  * Nets are evaluated level by level, each at most once in a settling, so that no glitch reaches a
  * latch or an asynchronous pin. Nets of a loop are evaluated together when their level comes, in
- * net order, round after round until nothing changes.
+ * the order of the loop, round after round until nothing changes.
  */
 export class Settler {
   /** Per net: 0, 1 or 2. Change it through `set` only. */
@@ -64,7 +64,12 @@ export class Settler {
       this.value,
       threeValued ? X : 0,
     );
-    this.#order = evaluationOrder(netCount, this.dependencies);
+    const place = new Uint32Array(netCount);
+    for (const nets of loopsOf(circuit).nets)
+      nets.forEach((net, i) => {
+        place[net] = i;
+      });
+    this.#order = evaluationOrder(netCount, this.dependencies, place);
     this.#queued = new Uint8Array(netCount);
     this.#agenda = new Uint32Array(netCount);
     this.#levelStart = startsOf(this.#order);
@@ -184,7 +189,7 @@ export class Settler {
     this.#runRounds(nets, Number.POSITIVE_INFINITY);
   }
 
-  /** Evaluates what is queued in net order, round after round; whether it settled within `limit`. */
+  /** Evaluates what is queued in the loop's order, round after round; whether it settled within `limit`. */
   #runRounds(
     nets: Uint32Array,
     limit: number,

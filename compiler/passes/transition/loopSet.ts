@@ -28,7 +28,7 @@ export class LoopSet {
     return this.#loops.loopOf[net]!;
   }
 
-  /** The nets of a loop in net order. */
+  /** The nets of a loop in the order of evaluation. */
   nets(loop: number): Uint32Array {
     return this.#loops.nets[loop]!;
   }

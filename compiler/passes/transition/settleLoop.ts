@@ -5,7 +5,7 @@ import { planLoop } from './planLoop.js';
 import { Rounds } from './rounds.js';
 
 /**
- * Settles a combinational loop: its nets are evaluated in net order, round after round, from the
+ * Settles a combinational loop: its nets are evaluated in order, round after round, from the
  * values that they had before. Returns the value of each net.
  *
  * The rounds are unrolled; how many are needed is tried out by `planLoop`. What is not proven to
