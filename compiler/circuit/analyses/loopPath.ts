@@ -1,11 +1,11 @@
 import type { Loops, SettlingSources } from '../loops.js';
 
 /**
- * The shortest way from the first net of a loop back to itself, in the direction in which values
+ * The shortest way from the lowest net of a loop back to itself, in the direction in which values
  * flow. The first net is not repeated at the end.
  */
 export function loopPath(loops: Loops, sources: SettlingSources, loop: number): number[] {
-  const first = loops.nets[loop]![0]!;
+  const first = loops.nets[loop]!.reduce((lowest, net) => Math.min(lowest, net));
   // Backwards from the first net; of each net met, the one that reads it.
   const readBy = new Map<number, number>();
   const queue = [first];
