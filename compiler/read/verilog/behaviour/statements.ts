@@ -11,16 +11,13 @@ import { declareLocals } from './locals.js';
 import { executeFor, executeRepeat, executeWhile } from './loops.js';
 import { refuse } from './names.js';
 import { isPowerUp, leaveForLater, putOffAssign } from './powerUp.js';
-import { type Placed, pathText, report } from './report.js';
+import { type Placed, pathText } from './report.js';
 import { isSystemName } from './systemFunctions.js';
 import { executeSystemTask } from './systemTasks.js';
 
-/** How many statements are executed for one process or expression at most. */
-const STEP_LIMIT = 1 << 21;
-
 /** Executes a statement symbolically on the context's store (clause 9). */
 export function executeStatement(statement: Statement, context: Context): Exits | undefined {
-  if (context.store.aborted || isEndless(statement, context)) return undefined;
+  if (context.store.aborted) return undefined;
   switch (statement.kind) {
     case 'block':
       return executeBlock(statement, context);
@@ -57,17 +54,6 @@ export function executeStatement(statement: Statement, context: Context): Exits 
       refuseStatement(statement, context);
       return undefined;
   }
-}
-
-// Each loop and each call has a limit of its own; what they are inside of each other has not.
-function isEndless(statement: Statement, { store, scope }: Context): boolean {
-  if (store.countStep() <= STEP_LIMIT) return false;
-  store.aborted = true;
-  const message =
-    `loops and calls inside of each other execute more than ${STEP_LIMIT} statements; ` +
-    'give them smaller bounds or spread them over clock cycles';
-  report(scope.shared, 'loop-unbounded', statement, message);
-  return true;
 }
 
 function executeBlock(

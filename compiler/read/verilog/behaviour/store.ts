@@ -52,7 +52,6 @@ export class Store {
   readonly #layers: Branch[] = [emptyBranch()];
   readonly #ordinary = new Set<NetId>();
   #nextLocal = -1;
-  #steps = 0;
 
   constructor(logic: Logic, options: StoreOptions = {}) {
     this.logic = logic;
@@ -70,12 +69,6 @@ export class Store {
     this.loopIndexes.clear();
     this.#ordinary.clear();
     this.aborted = false;
-    this.#steps = 0;
-  }
-
-  /** Counts a statement that is executed; returns how many there were. */
-  countStep(): number {
-    return ++this.#steps;
   }
 
   /** A new bit of a local variable. */

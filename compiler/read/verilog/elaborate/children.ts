@@ -1,7 +1,6 @@
 import { GrowableUint32 } from '../../../circuit/growable.js';
 import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
 import type { NameId } from '../../names.js';
-import { MAX_IN_MODULE, TooLarge } from './limits.js';
 import type { Origin } from './recording.js';
 
 /** A net of a child that is no port, and the net of the parent that it is one with. */
@@ -36,7 +35,6 @@ export class Children {
    * is 0 where it shall make no scope.
    */
   add(template: number, name: NameId, block: number, origin: Origin, width: number): number {
-    if (this.count >= MAX_IN_MODULE) throw new TooLarge('instances', origin);
     this.#template.push(template);
     this.#name.push(name);
     this.#block.push(block);

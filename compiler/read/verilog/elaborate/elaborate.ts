@@ -11,12 +11,12 @@ import { compileModule } from './compileModule.js';
 import { isWired } from './defaults.js';
 import { Design, NO_TEMPLATE } from './design.js';
 import type { LibraryCell } from './libraryCell.js';
-import { MAX_NETS, netsBelow, TooLarge } from './limits.js';
 import { DistinctDiagnostics, wordSpan } from './messages.js';
 import { noOverrides } from './overrides.js';
 import { compilePrimitive } from './primitives.js';
 import { withReplacements } from './replacements.js';
 import { Stamper } from './stamp.js';
+import type { Template } from './template.js';
 import { chooseTop } from './top.js';
 import { addTopPorts, checkTopPorts } from './topPorts.js';
 
@@ -51,23 +51,11 @@ export function elaborate(
   const { blackBoxes = [], replacements = new Map(), cells = [] } = options;
   const replaced = withReplacements(syntax, cells, replacements, sources, found);
   const design = new Design(replaced.syntax, sources, found, makers, { ...replaced, blackBoxes });
-  const circuit = buildInLimits(design, options.top);
+  const circuit = build(design, options.top);
   for (const { code, message, span, related } of found.list) {
     diagnostics.add(code, message, span, related);
   }
   return circuit;
-}
-
-function buildInLimits(design: Design, wanted: string | undefined): Circuit | undefined {
-  try {
-    return build(design, wanted);
-  } catch (error) {
-    if (!(error instanceof TooLarge)) throw error;
-    const { source, offset } = error.origin;
-    const span = wordSpan(design.sources.sources[source]!, offset);
-    design.diagnostics.add('not-supported', error.message, span);
-    return undefined;
-  }
 }
 
 function build(design: Design, wanted: string | undefined): Circuit | undefined {
@@ -88,10 +76,8 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
       (more) => `${more} more nets are read but have no driver`,
     );
   }
-  const nets = netsBelow(design.templates, top);
-  if (nets > MAX_NETS) reportSize(design, module, nets);
   if (design.diagnostics.hasErrors) return undefined;
-  const builder = new CircuitBuilder(nets + 1024, design.names.texts);
+  const builder = new CircuitBuilder(expectedNets(design, top), design.names.texts);
   for (const source of design.sources.sources) builder.addSource(source);
   const stamper = new Stamper(builder, design.templates);
   const boundary = stamper.stamp(top);
@@ -102,11 +88,14 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
   return design.diagnostics.hasErrors ? undefined : builder.finish(top.name);
 }
 
-function reportSize(design: Design, top: ModuleSyntax, nets: number): void {
-  const text = design.text(top.name);
-  const count = nets.toPrecision(2);
-  const message = `${text} with all instances has ${count} nets; at most ${MAX_NETS} can be held`;
-  design.diagnostics.add('not-supported', message, design.wordSpan(top.nameStart));
+/** A guess that is good for flat netlists; all it does is to save copying. */
+function expectedNets({ templates }: Design, { recording, children }: Template): number {
+  let nets = recording.netCount + 1024;
+  for (let child = 0; child < children.count; child++) {
+    const { recording, boundary } = templates[children.template(child)]!;
+    nets += recording.netCount - boundary.length;
+  }
+  return nets;
 }
 
 function checkBlackBoxes(design: Design, top: ModuleSyntax): void {

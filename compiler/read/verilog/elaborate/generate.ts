@@ -5,7 +5,6 @@ import type { GenerateBlock, Item } from '../syntax.js';
 import { BlockScope } from './blockScope.js';
 import type { ModuleBody } from './body.js';
 import { integerConstant, isTrue, numberOf } from './constants.js';
-import { MAX_BLOCKS } from './limits.js';
 import { OtherName, SymbolKind } from './symbols.js';
 
 type Construct<Kind extends Item['kind']> = Extract<Item, { kind: Kind }>;
@@ -34,9 +33,8 @@ export function expandFor(
   const before = body.workSoFar();
   let value = genvarValue(body, item, evaluateConstant(item.initial, scope));
   for (let turn = 0; value !== undefined; turn++) {
-    if (turn === MAX_TURNS || body.blocks.length > MAX_BLOCKS) {
-      const limit = turn === MAX_TURNS ? `${MAX_TURNS} turns` : `${MAX_BLOCKS} blocks with others`;
-      const message = `the generate loop makes more than ${limit}; give it an end`;
+    if (turn === MAX_TURNS) {
+      const message = `the generate loop makes more than ${MAX_TURNS} turns; give it an end`;
       body.report('loop-unbounded', message, start, end);
       body.forgetWork(before);
       return;

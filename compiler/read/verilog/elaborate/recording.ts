@@ -6,7 +6,6 @@ import { GrowableUint8, GrowableUint32 } from '../../../circuit/growable.js';
 import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
 import { X } from '../../../circuit/values.js';
 import type { GateSink } from '../scope.js';
-import { MAX_IN_MODULE, TooLarge } from './limits.js';
 import { Unions } from './unions.js';
 
 /** A place as `GateSink.at` takes it: index of a source, byte offset in it. */
@@ -80,7 +79,6 @@ export class Recording implements GateSink {
   }
 
   #add(declared: number): NetId {
-    if (this.#netOffset.length >= MAX_IN_MODULE) throw new TooLarge('nets', this.#at);
     this.#declared.push(declared);
     this.#netSource.push(this.#atSource);
     this.#netOffset.push(this.#atOffset);
@@ -243,12 +241,7 @@ export class Recording implements GateSink {
     return { source: this.driverSource(driver), offset: this.driverOffset(driver) };
   }
 
-  get #at(): Origin {
-    return { source: this.#atSource, offset: this.#atOffset };
-  }
-
   #begin(net: NetId, kind: number): void {
-    if (this.#output.length >= MAX_IN_MODULE) throw new TooLarge('drivers', this.#at);
     const driver = this.#output.length;
     const root = this.find(net);
     if (this.#firstDriver.get(root) === 0) this.#firstDriver.set(root, driver + 1);

@@ -134,13 +134,10 @@ function declareBlocks(body: ModuleBody, scope: BlockScope, statement: Statement
       for (const each of statement.body) declareBlocks(body, inner, each);
       break;
     }
-    case 'if': {
-      // A chain of `else if` may be long.
-      let rest: Statement | undefined = statement;
-      for (; rest?.kind === 'if'; rest = rest.whenFalse) declareBlocks(body, scope, rest.whenTrue);
-      if (rest !== undefined) declareBlocks(body, scope, rest);
+    case 'if':
+      declareBlocks(body, scope, statement.whenTrue);
+      if (statement.whenFalse !== undefined) declareBlocks(body, scope, statement.whenFalse);
       break;
-    }
     case 'case':
       for (const item of statement.items) declareBlocks(body, scope, item.body);
       break;
