@@ -55,7 +55,8 @@ async function measure(folder: string): Promise<ReadingResult> {
   const inspect = await runCommand('inspect', ...files);
   say('running one cycle');
   const response = join(folder, 'response.csv');
-  const run = ['run', ...files, '--random', '1', '--cycles', '1', '--response', response];
+  const request = ['--random', '1', '--cycles', '1', '--response', response];
+  const run = ['run', ...files, ...request, '--no-cache'];
   const firstResponse = await runCommand(...run);
   const { nets, registers } = all[0]!;
   return {

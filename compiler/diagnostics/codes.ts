@@ -22,6 +22,11 @@ export const codeTable = {
     'Use .v for Verilog, .bench for the ISCAS text form, .lib for Liberty.',
   ),
 
+  'file-no-text': error(
+    'A file is no text in UTF-8: it is compressed, binary, or in another encoding.',
+    'Unpack it, or save it as UTF-8.',
+  ),
+
   // Common to all readers
   'syntax-error': error('The text does not follow the grammar.', 'Mend it at the place named.'),
   'not-supported': error(
@@ -67,6 +72,10 @@ export const codeTable = {
   'combinational-loop': warning(
     'Gates feed back to themselves without a register between.',
     'Nothing, where it is a latch made of gates; else break the loop with a register.',
+  ),
+  'self-reset': warning(
+    'The set or reset of a register depends on its own output.',
+    'Nothing, where a pulse is meant; a run without delays cannot show that it is long enough.',
   ),
   'register-no-start': warning(
     'Registers have neither an initial value nor a set or reset.',
@@ -127,6 +136,10 @@ export const codeTable = {
     'Several files model the same cell; the one named first decides.',
     'Leave one of the models out, or name the better one first.',
   ),
+  'table-run': note(
+    'The table of a cell with state is neither a flip-flop nor a latch.',
+    'Nothing: it is run from its table, exactly; a row for each lone change keeps x out.',
+  ),
 
   // Verilog behaviour
   'constant-required': error(
@@ -145,6 +158,10 @@ export const codeTable = {
     'A loop runs longer than can be unrolled, or its end depends on signals.',
     'Give the loop constant bounds.',
   ),
+  'design-too-large': error(
+    'What the text stands for, with all loops, calls and instances, is too large to be built.',
+    'Look for a bound that is too large; else divide the design, or simulate a part of it.',
+  ),
   'latch-inferred': warning(
     'Combinational code leaves a variable unassigned on some path, so it holds its value.',
     'Assign a default first, or complete the branches.',
@@ -160,6 +177,10 @@ export const codeTable = {
   'initial-delayed': warning(
     'An `initial` waits; what follows does not happen at power-up and is left out.',
     'Assign power-up values before the first delay; let input ports bring later changes.',
+  ),
+  'memory-data': warning(
+    'A data file has more or fewer words than the memory to be filled, or wider ones.',
+    'Mend the file, or give `$readmemh` the addresses that it is for.',
   ),
   'task-ignored': note(
     'A system task that prints or steers a simulation has no meaning in a circuit.',

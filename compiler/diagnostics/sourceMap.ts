@@ -9,6 +9,11 @@ export class SourceMap {
   readonly #bases: number[] = [];
   #end = 0;
 
+  /** Sum of the lengths of all sources, with one more for each. */
+  get length(): number {
+    return this.#end;
+  }
+
   /** Adds a source; returns the position of its first byte. */
   add(source: Source): Position {
     const base = this.#end;

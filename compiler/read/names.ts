@@ -19,6 +19,8 @@ export function hashStep(hash: number, byte: number): number {
   return Math.imul(hash, PRIME) ^ byte;
 }
 
+const encoder = new TextEncoder();
+
 /**
  * Each distinct name once, as a number.
  *
@@ -71,7 +73,7 @@ export class NameTable {
 
   /** The id of a name given as a string; made if new. */
   internText(text: string): NameId {
-    const bytes = new TextEncoder().encode(text);
+    const bytes = encoder.encode(text);
     return this.intern(bytes, 0, bytes.length);
   }
 

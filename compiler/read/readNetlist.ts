@@ -5,6 +5,7 @@ import { SourceMap } from '../diagnostics/sourceMap.js';
 import { readBench } from './bench/readBench.js';
 import { libertyCells } from './liberty/libertyCells.js';
 import { readLiberty } from './liberty/readLiberty.js';
+import { faultOfText, formOfText, type TextForm } from './textForm.js';
 import { elaborate } from './verilog/elaborate/elaborate.js';
 import { parseVerilog } from './verilog/parse.js';
 import type { PreprocessOptions } from './verilog/preprocess.js';
@@ -19,6 +20,11 @@ export interface NetlistReadOptions extends PreprocessOptions {
    * a module where all its connections are named.
    */
   readonly blackBoxes?: readonly string[];
+  /**
+   * Arrays of variables with at least so many bits are held as memories and not as registers, if
+   * they can be (default 257).
+   */
+  readonly memoriesFrom?: number;
   /**
    * By the name of a module the Verilog file that its definition is taken from, whatever other
    * files define under that name. The other modules of the file are added to the design.
@@ -50,6 +56,8 @@ export function readNetlist(
   if (first === undefined) throw new RangeError('expected at least one netlist, got none');
   const forms = sources.map((source) => formOf(source, diagnostics));
   if (forms.includes(undefined)) return undefined;
+  const texts = [...sources, ...(options.replacements?.values() ?? [])];
+  if (!texts.every((source) => isText(source, diagnostics))) return undefined;
   if (!forms.includes('bench')) {
     if (!areVerilog(options.replacements, diagnostics)) return undefined;
     return readVerilog(sources, options, diagnostics);
@@ -93,11 +101,12 @@ function readVerilog(
     .map((source) => readLiberty(source, options, sourceMap, diagnostics));
   // The tree of a text with errors has gaps; what they would lead to says nothing of the text.
   if (errorsIn(diagnostics) > errors) return undefined;
-  const { top, blackBoxes = [] } = options;
+  const { top, blackBoxes = [], readInclude, memoriesFrom } = options;
   const cells = libertyCells(libraries, syntax.names, sources, sourceMap);
   const elaborateOptions = {
-    ...{ cells, blackBoxes, replacements },
+    ...{ cells, blackBoxes, replacements, memoriesFrom },
     ...(top !== undefined && { top }),
+    ...(readInclude !== undefined && { readInclude }),
   };
   return elaborate(syntax, elaborateOptions, sourceMap, diagnostics);
 }
@@ -129,8 +138,10 @@ function errorsIn({ list }: Diagnostics): number {
   return list.reduce((count, { severity }) => (severity === 'error' ? count + 1 : count), 0);
 }
 
+const endingOf = ({ path }: Source): string => /\.[^./\\]*$/.exec(path)?.[0].toLowerCase() ?? '';
+
 function formOf(source: Source, diagnostics: Diagnostics) {
-  const ending = /\.[^./\\]*$/.exec(source.path)?.[0].toLowerCase() ?? '';
+  const ending = endingOf(source);
   const form = formOfEnding[ending];
   if (form !== undefined) return form;
   const message =
@@ -138,6 +149,29 @@ function formOf(source: Source, diagnostics: Diagnostics) {
     'to .v for Verilog, .lib for Liberty or .bench for the ISCAS text form';
   reportFile(source, message, diagnostics);
   return undefined;
+}
+
+const formNames: Readonly<Record<TextForm, string>> = {
+  verilog: 'Verilog, whose files end in .v',
+  bench: 'the ISCAS text form, whose files end in .bench',
+  liberty: 'a Liberty library, whose files end in .lib',
+  vhdl: 'VHDL, which is not read; translate it to Verilog',
+  markup: 'a page for a browser; fetch the netlist itself',
+};
+
+/** Whether a file is a text, and of the form that its ending tells; reports it if not. */
+function isText(source: Source, diagnostics: Diagnostics): boolean {
+  const fault = faultOfText(source.bytes);
+  if (fault !== undefined) {
+    const message = `${source.path} ${fault}`;
+    diagnostics.add('file-no-text', message, { source, start: 0, end: 0 });
+    return false;
+  }
+  const looks = formOfText(source.bytes);
+  const form = formOfEnding[endingOf(source)];
+  if (looks === undefined || form === undefined || looks === form) return true;
+  reportFile(source, `${source.path} begins like ${formNames[looks]}`, diagnostics);
+  return false;
 }
 
 function reportFile(source: Source, message: string, diagnostics: Diagnostics): void {

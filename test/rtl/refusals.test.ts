@@ -125,23 +125,37 @@ const refusals: Readonly<Record<string, readonly [code: string, way: string, tex
          q <= $random; // here
      endmodule`,
   ],
-  'a memory that comes from a file': [
-    'not-supported',
-    'assign the words in an initial block',
+  'a memory that comes from a file that is not there': [
+    'file-unreadable',
+    'mend its name',
     `module m (input [1:0] a, output [7:0] q);
        reg [7:0] rom [0:3];
        initial $readmemh("rom.hex", rom); // here
        assign q = rom[a];
      endmodule`,
   ],
-  'a memory too large for registers': [
+  'a large memory without a clock': [
     'not-supported',
-    'split it',
-    `module m (input clk, input [9:0] a, input [31:0] d, output [31:0] q);
-       reg [31:0] ram [0:1023];
-       always @(posedge clk)
-         ram[a] <= d; // here
-       assign q = ram[0];
+    'write it at clock edges',
+    `module m (input clk, input we, input [11:0] a, input [31:0] d, output [31:0] q);
+       reg [31:0] ram [0:4095];
+       always @*
+         if (we) ram[a] = d; // here
+       assign q = ram[a];
+     endmodule`,
+  ],
+  'a large memory that is reset without a clock': [
+    'not-supported',
+    'clear it word by word at clock edges',
+    `module m (input clk, input rst, input [11:0] a, input [31:0] d, output [31:0] q);
+       reg [31:0] ram [0:4095];
+       integer i;
+       always @(posedge clk or posedge rst)
+         if (rst) begin
+           for (i = 0; i < 4096; i = i + 1)
+             ram[i] <= 0; // here
+         end else ram[a] <= d;
+       assign q = ram[a];
      endmodule`,
   ],
   'a loop that a signal bounds': [

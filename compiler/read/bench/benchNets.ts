@@ -56,7 +56,8 @@ export class BenchNets {
 
   /** The span of a name that stands at an offset. */
   spanAt(name: NameId, offset: number): Span {
-    const length = new TextEncoder().encode(this.text(name)).length;
+    const { texts } = this.#names;
+    const length = texts.end(name) - texts.start(name);
     return { source: this.#source, start: offset, end: offset + length };
   }
 

@@ -51,6 +51,9 @@ class BenchReader {
   }
 
   read(): Circuit | undefined {
+    if (this.#scanner.token === Token.End) {
+      this.#syntaxError('the file is empty; INPUT, OUTPUT or the name of a net was expected');
+    }
     while (this.#scanner.token !== Token.End) this.#statement();
     this.#nets.defineSupplies();
     this.#reportUndefined();
@@ -218,7 +221,15 @@ class BenchReader {
 
   // Reading goes on with the line after the last token that was understood.
   #syntaxError(message: string, start = this.#scanner.start, end = this.#scanner.end): void {
-    this.#error('syntax-error', message, { source: this.#source, start, end });
+    // What is missing at the end of the text belongs behind its last word.
+    const isEnd = start === this.#source.bytes.length;
+    const from = isEnd ? this.#scanner.previousEnd : start;
+    const text = isEnd ? `${message}, found the end of the file` : message;
+    this.#error('syntax-error', text, {
+      source: this.#source,
+      start: from,
+      end: isEnd ? from : end,
+    });
     this.#scanner.skipLine(this.#scanner.previousEnd);
   }
 

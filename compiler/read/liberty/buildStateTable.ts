@@ -1,4 +1,6 @@
 import type { NetId } from '../../circuit/ids.js';
+import { eventsOfFunction } from '../../circuit/tables/tableEvents.js';
+import { listed } from '../listed.js';
 import { lowerSequential } from '../verilog/elaborate/sequentialPrimitive.js';
 import { MODEL_CURE } from './buildState.js';
 import type { LibertyStateTable } from './cell.js';
@@ -37,7 +39,7 @@ export class StateTableBuild {
     const { nodes, inputs } = this.#table;
     const index = nodes.indexOf(name.text.trim());
     if (index < 0) {
-      const message = `${name.text} is no column of the state table, which has ${nodes.join(', ')}`;
+      const message = `${name.text} is no column of the state table, which has ${listed(nodes)}`;
       this.#build.report('name-undeclared', message, name);
       return undefined;
     }
@@ -94,8 +96,12 @@ export class StateTableBuild {
     if (found.length < nets.length) return;
     const table = new NodeTable(rows, index);
     const pins = { output, inputs: found, names, initial: 2 };
-    const reason = lowerSequential(table, pins, this.#build.recording);
-    if (reason !== undefined) refuse(reason);
+    const { name } = this.#build.cell;
+    const source = eventsOfFunction(table.leaf, found.length);
+    const cell = { name, table, source, isExact: false };
+    const reason = lowerSequential(cell, pins, this.#build.recording);
+    if (reason === undefined) return;
+    this.#build.report('table-run', `the state table of cell ${name} ${reason}`, this.#table);
   }
 
   #resolve(

@@ -23,8 +23,8 @@ import { type CellSignal, signalsOf } from './cellSignals.js';
  * What is wrong with the cell is reported now, with the instance at `place` that needs it.
  */
 export function cellTemplate(cell: LibertyCell, context: CellContext, place: Position): Template {
-  const { names, sources, diagnostics } = context;
-  const recording = new Recording();
+  const { names, sources, diagnostics, budget } = context;
+  const recording = new Recording(budget);
   const { index, offset } = sources.locate(cell.start);
   recording.at(index, offset);
   const at = sources.span(place);
@@ -125,7 +125,6 @@ function blockNames(
     parent: 0,
     names: { name, signals, bits: nets.length },
     nets: Uint32Array.from(nets),
-    scratch: new Uint32Array(nets.length),
   };
 }
 
@@ -134,13 +133,13 @@ function scopeOf(
   cell: LibertyCell,
   signals: readonly CellSignal[],
   builder: Recording,
-  { names, sources, diagnostics }: CellContext,
+  { names, sources, diagnostics, budget }: CellContext,
 ): BlockScope {
   const blocks: BlockScope[] = [];
   const moduleName: NameId = names.internText(cell.name);
   const scope = new BlockScope(
     {
-      ...{ builder, names, sources, diagnostics, moduleName, blocks },
+      ...{ builder, names, sources, diagnostics, budget, moduleName, blocks },
       initialValues: new Map<NetId, 0 | 1>(),
       bindingInside: () => undefined,
       report: (code, message, start, end) => {

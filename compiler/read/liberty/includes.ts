@@ -1,5 +1,6 @@
 import type { Source } from '../../diagnostics/source.js';
 import type { Position, SourceMap } from '../../diagnostics/sourceMap.js';
+import { faultOfText } from '../textForm.js';
 import type { Problems } from '../verilog/problems.js';
 
 /** What `readLiberty` may be told. */
@@ -10,6 +11,9 @@ export interface LibertyOptions {
 
 const MAX_DEPTH = 20;
 const MAX_INCLUDES = 1000;
+
+// Bytes of files that are included once more.
+const MAX_REPEATED = 1 << 26;
 
 /** A text that is being read, and where it begins in the source map. */
 export interface OpenSource {
@@ -25,6 +29,7 @@ export class Includes {
   readonly #bases = new Map<Source, Position>();
   readonly #open: OpenSource[] = [];
   #count = 0;
+  #repeated = 0;
 
   constructor(options: LibertyOptions, sourceMap: SourceMap, problems: Problems) {
     this.#options = options;
@@ -61,7 +66,18 @@ export class Includes {
       return undefined;
     }
     const source = this.#options.readInclude?.(path, this.#open.at(-1)!.source);
-    if (source !== undefined) return this.open(source);
+    const fault = source && faultOfText(source.bytes);
+    if (fault !== undefined) {
+      this.#problems.add('file-no-text', `the included file "${path}" ${fault}`, start, end);
+      return undefined;
+    }
+    if (source !== undefined) {
+      if (this.#bases.has(source)) this.#repeated += source.bytes.length;
+      if (this.#repeated <= MAX_REPEATED) return this.open(source);
+      this.#problems.add('syntax-error', `"${path}" is included too often`, start, end);
+      this.#problems.giveUp();
+      return undefined;
+    }
     const message = `the included file "${path}" is not found; name its folder with --include`;
     this.#problems.add('file-unreadable', message, start, end);
     return undefined;

@@ -1,3 +1,4 @@
+import { Leaf } from '../../circuit/tables/diagram.js';
 import type { Outcome, SequentialTable } from '../verilog/elaborate/primitiveTable.js';
 import type { NextSymbol, StateRow } from './stateTable.js';
 
@@ -5,6 +6,7 @@ import type { NextSymbol, StateRow } from './stateTable.js';
 const outcomes: readonly Outcome[] = ['0', '1', '-', 'x'];
 const outcomeOf: Readonly<Record<Exclude<NextSymbol, '-'>, number>> = { L: 0, H: 1, N: 2, X: 3 };
 const UNKNOWN = 3;
+const leaves: readonly number[] = [Leaf.Zero, Leaf.One, Leaf.Hold, Leaf.Unknown];
 
 /**
  * The columns that a node depends on, besides itself: indices into the inputs of the table and
@@ -43,6 +45,10 @@ export class NodeTable implements SequentialTable {
       this.#events[at] = outcomeAt(masked, at >> (this.inputs + 1), levels, at & 1);
     }
   }
+
+  /** The `Leaf` of what `event` tells. */
+  readonly leaf = (input: number, levels: number, state: number): number =>
+    leaves[this.#at(input, levels, state)]!;
 
   event(input: number, levels: number, state: number): Outcome {
     return outcomes[this.#at(input, levels, state)]!;

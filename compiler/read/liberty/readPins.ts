@@ -1,4 +1,4 @@
-import { indexAt, placesOf, rangeOfType, styledName, widthOf } from './bitRange.js';
+import { indexAt, MAX_BITS, placesOf, rangeOfType, styledName, widthOf } from './bitRange.js';
 import type {
   BitRange,
   LibertyPin,
@@ -174,7 +174,9 @@ function busRange(draft: CellDraft, group: LibertyGroup): BitRange | undefined {
   }
   const range = rangeOfType(type);
   if (range === undefined) {
-    const message = `bit_width, bit_from and bit_to of type ${typeName.text} do not make a range`;
+    const message =
+      `bit_width, bit_from and bit_to of type ${typeName.text} do not make a range ` +
+      `of ${MAX_BITS} bits at most`;
     draft.report('range-invalid', message, type);
   }
   return range;

@@ -85,17 +85,28 @@ function endOfOpaque(text: Uint8Array, from: number): number {
   return at;
 }
 
-/** The body of a macro with each formal argument replaced by the actual one. */
-export function substitute(macro: Macro, actuals: Actuals, names: NameTable): Uint8Array {
+/**
+ * The body of a macro with each formal argument replaced by the actual one; undefined where that
+ * is longer than `most` bytes.
+ */
+export function substitute(
+  macro: Macro,
+  actuals: Actuals,
+  names: NameTable,
+  most: number,
+): Uint8Array | undefined {
   const { body, formals = [] } = macro;
   const pieces: Uint8Array[] = [];
   let copied = 0;
   let at = 0;
+  let length = body.length;
   while (at < body.length) {
     const end = endOfWord(body, at);
     const isName = charClass[body[at]!] === CharClass.Letter;
     const formal = isName ? formals.indexOf(names.intern(body, at, end)) : -1;
     if (formal >= 0) {
+      length += actuals.texts[formal]!.length;
+      if (length > most) return undefined;
       pieces.push(body.subarray(copied, at), actuals.texts[formal]!, after(actuals.texts[formal]!));
       copied = end;
     }

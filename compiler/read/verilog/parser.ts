@@ -1,5 +1,6 @@
 import type { Position } from '../../diagnostics/sourceMap.js';
 import type { NameId, NameTable } from '../names.js';
+import { belongsBefore, escapedNameHint, mergeMarkHint } from './failureText.js';
 import { InstanceTable } from './instances.js';
 import { Keyword, keywords, laterWords, wordsLikeNames } from './keywords.js';
 import type { Preprocessor } from './preprocess.js';
@@ -68,14 +69,25 @@ export class Parser {
 
   /** Reports that something else was expected at the current token, and gives up the item. */
   fail(expected: string): never {
-    const { start, end } = this.tokens;
+    const { start } = this.tokens;
     // What is around a construct that failed may fail at the same place once more.
     if (start !== this.#lastFailure && !this.#followsUndefinedMacro()) {
-      const message = `expected ${expected}, found ${this.found()}${this.#hint()}`;
-      this.problems.add('syntax-error', message, start, end);
+      this.#reportFailure(expected);
     }
     this.#lastFailure = start;
     throw new SyntaxFailure();
+  }
+
+  #reportFailure(expected: string): void {
+    const { start, end, lastEnd, text, base, fixedStart } = this.tokens;
+    // The token before may stand in another file, or in a macro.
+    const isNear = fixedStart < 0 && lastEnd >= base && lastEnd <= start;
+    const around = { text, before: isNear ? lastEnd - base : 0, found: start - base };
+    const isBefore = belongsBefore(expected, around);
+    const found = `${this.found()}${isBefore ? ' on a later line' : ''}`;
+    const message = `expected ${expected}, found ${found}${this.#hint(around)}`;
+    const place = isBefore ? { start: lastEnd, end: lastEnd } : { start, end };
+    this.problems.add('syntax-error', message, place.start, place.end);
   }
 
   /** Reports a problem at a place, and gives up the item. */
@@ -167,8 +179,10 @@ export class Parser {
     return undefinedAt >= this.tokens.lastEnd && undefinedAt <= this.tokens.start;
   }
 
-  #hint(): string {
+  #hint(around: Parameters<typeof escapedNameHint>[0]): string {
     const { kind, value } = this.tokens;
+    const hint = mergeMarkHint(kind, around) || escapedNameHint(around);
+    if (hint !== '') return hint;
     const reserved = keywords[kind - Token.FirstKeyword];
     if (reserved !== undefined && wordsLikeNames.has(reserved)) {
       return `; as a name, a reserved word is written with a backslash and a space: \\${reserved} `;

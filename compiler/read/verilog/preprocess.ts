@@ -2,6 +2,7 @@ import type { DiagnosticCode } from '../../diagnostics/codes.js';
 import type { Source } from '../../diagnostics/source.js';
 import type { Position, SourceMap } from '../../diagnostics/sourceMap.js';
 import type { NameId, NameTable } from '../names.js';
+import { faultOfText } from '../textForm.js';
 import { Char, CharClass, charClass, isSpace } from './characters.js';
 import { Conditionals, type Place } from './conditionals.js';
 import { readBetween, readLine, readWord } from './directiveText.js';
@@ -27,6 +28,11 @@ const MAX_INCLUDES = 20_000;
 const MAX_EXPANSION = 1 << 24;
 const USE_COST = 64;
 
+// What macros and files that are included again may add to a text in all: bytes, and bytes for each
+// byte of the text.
+const MAX_ADDED = 1 << 26;
+const ADDED_PER_BYTE = 16;
+
 /** A text that waits for the end of one inside it. */
 interface Frame {
   readonly text: Uint8Array;
@@ -46,7 +52,7 @@ interface Frame {
 export class Preprocessor implements ScannerClient {
   readonly tokens: Scanner;
   readonly settings: Settings = initialSettings();
-  /** Where an undefined macro was used last: what follows it may lack its text. */
+  /** Where a macro was used last that has no text: what follows it may lack that. */
   undefinedAt: Position = -1;
 
   readonly #names: NameTable;
@@ -62,6 +68,7 @@ export class Preprocessor implements ScannerClient {
   #includeDepth = 0;
   #includes = 0;
   #expanded = 0;
+  #added = 0;
 
   constructor(
     names: NameTable,
@@ -128,8 +135,12 @@ export class Preprocessor implements ScannerClient {
 
   #report(code: DiagnosticCode, message: string, start: Position, end: Position): void {
     this.#problems.add(code, message, start, end);
-    if (!this.#problems.areTooMany) return;
-    // What cannot be read may go on without end, each piece with a search through all of the rest.
+    if (this.#problems.areTooMany) this.#giveUp();
+  }
+
+  // What cannot be read may go on without end, each piece with a search through all of the rest.
+  #giveUp(): void {
+    this.#problems.giveUp();
     this.#frames.length = 0;
     this.tokens.text = new Uint8Array(0);
   }
@@ -229,8 +240,13 @@ export class Preprocessor implements ScannerClient {
         if (open) tokens.at = actuals?.end ?? tokens.text.length;
         return;
       }
-      text = substitute(macro, actuals, this.#names);
       tokens.at = actuals.end;
+      const substituted = substitute(macro, actuals, this.#names, MAX_EXPANSION);
+      if (substituted === undefined) {
+        this.#endless(name, place);
+        return;
+      }
+      text = substituted;
     }
     this.#expand(text, name, place);
   }
@@ -241,8 +257,13 @@ export class Preprocessor implements ScannerClient {
     this.#expanded = (isInside ? this.#expanded : 0) + text.length + USE_COST;
     const depth = this.#frames.length - this.#includeDepth;
     if (depth > MAX_MACRO_DEPTH || this.#expanded > MAX_EXPANSION) {
-      this.#problem(`the text of the macro '\`${name}' has no end; does it use itself?`, place);
-      while (tokens.fixedStart >= 0) this.endOfText();
+      this.#endless(name, place);
+      return;
+    }
+    if (!this.#mayAdd(text.length + USE_COST)) {
+      const message = `macros such as '\`${name}' make the text too long; do they use each other?`;
+      this.#problem(message, place);
+      this.#giveUp();
       return;
     }
     const end = isInside ? tokens.fixedEnd : tokens.endPosition(tokens.at);
@@ -251,6 +272,18 @@ export class Preprocessor implements ScannerClient {
     tokens.at = 0;
     tokens.fixedStart = place.start;
     tokens.fixedEnd = end;
+  }
+
+  #endless(name: string, place: Place): void {
+    this.#problem(`the text of the macro '\`${name}' has no end; does it use itself?`, place);
+    while (this.tokens.fixedStart >= 0) this.endOfText();
+    this.undefinedAt = place.start;
+  }
+
+  /** Takes note of bytes that come on top of those of the files; whether they may. */
+  #mayAdd(bytes: number): boolean {
+    this.#added += bytes;
+    return this.#added <= MAX_ADDED + ADDED_PER_BYTE * this.#sourceMap.length;
   }
 
   /** `include "path"` or `include <path>`. */
@@ -271,13 +304,23 @@ export class Preprocessor implements ScannerClient {
           : `files are included ${MAX_INCLUDE_DEPTH} deep`;
       const message = `${limit}; does "${path}" include itself?`;
       this.#problem(message, whole);
-      if (this.#includes > MAX_INCLUDES) this.#problems.giveUp();
+      if (this.#includes > MAX_INCLUDES) this.#giveUp();
       return;
     }
     const source = this.#readInclude?.(path, this.#source!);
     if (source === undefined) {
       const message = `the included file "${path}" is not found; name its folder with --include`;
       this.#report('file-unreadable', message, whole.start, whole.end);
+      return;
+    }
+    const fault = this.#bases.has(source) ? undefined : faultOfText(source.bytes);
+    if (fault !== undefined) {
+      this.#report('file-no-text', `the included file "${path}" ${fault}`, whole.start, whole.end);
+      return;
+    }
+    if (this.#bases.has(source) && !this.#mayAdd(source.bytes.length)) {
+      this.#problem(`"${path}" is included too often; does it include itself?`, whole);
+      this.#giveUp();
       return;
     }
     this.#includeDepth++;

@@ -2,6 +2,7 @@ import type { Position } from '../../diagnostics/sourceMap.js';
 import { EMPTY_HASH, hashStep, type NameTable } from '../names.js';
 import { Char, CharClass, charClass, isNamePart, isSpace } from './characters.js';
 import { decode } from './decode.js';
+import { strayText } from './failureText.js';
 import { currentVersion, reservedWords } from './keywords.js';
 import { baseOfLetter, SIGNED_BASE } from './numbers.js';
 import { scanOperator, singleTokens } from './operators.js';
@@ -302,7 +303,7 @@ export class Scanner {
     // A stretch of stray bytes, such as letters beyond ASCII, gives one message.
     while (this.text[this.at]! > 127) this.at++;
     const stray = decode(this.text, start, this.at);
-    this.#problem(`'${stray}' has no meaning here; remove it`, start, this.at);
+    this.#problem(strayText(stray), start, this.at);
     this.kind = Token.Nothing;
   }
 

@@ -1,9 +1,14 @@
 import type { LatchPins, RegisterPins } from '../../circuit/builder.js';
 import type { GateKind } from '../../circuit/gates.js';
 import type { NetId } from '../../circuit/ids.js';
+import type { MemoryIndex } from '../../circuit/memory.js';
+import type { WritePins } from '../../circuit/memoryTable.js';
 import type { Diagnostics } from '../../diagnostics/diagnostics.js';
-import type { SourceMap } from '../../diagnostics/sourceMap.js';
+import type { Source } from '../../diagnostics/source.js';
+import type { Position, SourceMap } from '../../diagnostics/sourceMap.js';
 import type { NameId, NameTable } from '../names.js';
+import type { Budget } from './budget.js';
+import type { InitialContents } from './initialContents.js';
 import type { RoutineItem } from './syntax.js';
 
 /** A constant of known width: bits in `value`, x and z bits set in `unknown`. */
@@ -43,7 +48,13 @@ export interface SignalBinding {
   readonly nets: readonly NetId[];
 }
 
-/** An array of words: `reg [7:0] m [0:15]` or of nets, one entry of `words` per address from `low` on. */
+/** Lowest and highest value of an index of an array. */
+export interface IndexRange {
+  readonly low: number;
+  readonly high: number;
+}
+
+/** An array of words: `reg [7:0] m [0:15]`, or of nets. */
 export interface MemoryBinding {
   readonly kind: 'memory';
   readonly name: NameId;
@@ -52,9 +63,25 @@ export interface MemoryBinding {
   readonly signed: boolean;
   /** As in `SignalBinding`. */
   readonly isVariable: boolean;
-  readonly low: number;
-  readonly high: number;
+  /** Outermost first; the last one counts fastest in the order of the words. */
+  readonly indices: readonly IndexRange[];
+  /** The nets of each word; empty where the words are held as a memory. */
   readonly words: readonly (readonly NetId[])[];
+  /** What holds the words where they have no nets. */
+  readonly held?: HeldMemory;
+  /** Set where such an array is named from another module. */
+  readonly isFar?: true;
+}
+
+/** An array that is held as a memory of the circuit. */
+export interface HeldMemory {
+  /** Its number in the sink. */
+  readonly number: number;
+  /** Bits of each index in an address, as many as for `indices` of the binding. */
+  readonly indices: readonly MemoryIndex[];
+  readonly contents: InitialContents;
+  /** Where it is declared. */
+  readonly position: Position;
 }
 
 /**
@@ -81,6 +108,10 @@ export interface GateSink {
   gate(kind: GateKind, fanin: readonly NetId[]): NetId;
   register(pins: RegisterPins): void;
   latch(pins: LatchPins): void;
+  /** The nets of the word of a held memory at an address; one and the same for the same address. */
+  readMemory(memory: number, address: readonly NetId[]): readonly NetId[];
+  /** Lets a clock edge write to a held memory, after all that was said of it before. */
+  writeMemory(memory: number, pins: WritePins): void;
 }
 
 /** What all of one module's elaboration shares. */
@@ -89,8 +120,17 @@ export interface Elaboration {
   readonly names: NameTable;
   readonly sources: SourceMap;
   readonly diagnostics: Diagnostics;
+  readonly budget: Budget;
   /** Value given to a net at power-up by `initial`, 0 or 1, collected before registers are made. */
   readonly initialValues: Map<NetId, 0 | 1>;
+  /** Finds a data file named in the source at a position; undefined if there is none. */
+  readData?(path: string, from: Position): Source | undefined;
+  /**
+   * Takes note that a held memory is used as only registers can be, at a place: its module is
+   * compiled anew, with the memory built from registers, where that is not too large. Returns only
+   * if it is.
+   */
+  needRegisters?(memory: HeldMemory): void;
 }
 
 /**
@@ -118,6 +158,8 @@ export interface Scope {
   resolve(path: readonly NameId[]): Binding | undefined;
   /** Why a name does not resolve although it is declared; undefined where it is not. */
   unusable?(name: NameId): Unusable | undefined;
+  /** The names that can be used here, for a message about one that cannot. */
+  visibleNames?(): Iterable<string>;
   /**
    * The scope of a named block of statements that stands in an `always` or `initial` of this
    * scope, or in another such block; its declarations are made. Undefined if there is none, and

@@ -152,11 +152,10 @@ describe('readBench', () => {
     expect(circuit.originOffset[netOf(circuit, 'G3')]).toBe(s27.indexOf('G3)'));
   });
 
-  it('reads an empty text as an empty circuit', () => {
-    expect(accepted('').netCount).toBe(0);
-  });
-
   it.each([
+    ['an empty text', '', ['syntax-error @1']],
+    ['nothing but a comment', '# nothing\n', ['syntax-error @1']],
+    ['a text that ends in a gate', 'INPUT(a)\ny = NOT(a\n\n', ['syntax-error @2']],
     ['a name that nothing defines', 'y = NOT(b)', ['name-undeclared b@1']],
     ['an undefined output', 'OUTPUT(\u00e9t)', ['name-undeclared \u00e9t@1']],
     ['a second definition', 'INPUT(a)\na = NOT(a)', ['name-redeclared a@2']],

@@ -146,15 +146,15 @@ describe('a bus', () => {
     ],
     [
       'type (b) { bit_width : x; } bus (A) { bus_type : b; }',
-      "range-invalid 'type (b)' bit_width, bit_from and bit_to of type b do not make a range",
+      "range-invalid 'type (b)' bit_width, bit_from and bit_to of type b do not make a range of 65536 bits at most",
     ],
     [
       'type (b) { bit_width : 3; bit_from : 3; bit_to : 0; } bus (A) { bus_type : b; }',
-      "range-invalid 'type (b)' bit_width, bit_from and bit_to of type b do not make a range",
+      "range-invalid 'type (b)' bit_width, bit_from and bit_to of type b do not make a range of 65536 bits at most",
     ],
     [
       'type (b) { bit_width : 99999999; } bus (A) { bus_type : b; }',
-      "range-invalid 'type (b)' bit_width, bit_from and bit_to of type b do not make a range",
+      "range-invalid 'type (b)' bit_width, bit_from and bit_to of type b do not make a range of 65536 bits at most",
     ],
     [
       `${byte} bus (A) { bus_type : byte; pin (A[4]) { } }`,

@@ -1,5 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
+import { responseTo } from '../../sequential/courses.js';
 import { play, referenceFor } from '../../support/rows.js';
 import { cellCircuit, cellDesign } from './reading.js';
 
@@ -9,6 +10,22 @@ const table = (header: string, rows: string): string =>
   `statetable (${header}) { table : "${rows}"; }`;
 const node = (name: string): string =>
   `pin (${name}) { direction : output; internal_node : "${name}"; }`;
+
+/** Rows of two inputs of which one changes at a time, with x and with values in place of the x. */
+function coursesOf(changes: readonly (readonly [number, string, number])[]): [string[], string[]] {
+  const levels = ['0', '0'];
+  const values = ['0', '0'];
+  const courses: [string[], string[]] = [['00'], ['00']];
+  for (const [input, level, instead] of changes) {
+    // While it stays x it stands for one value.
+    if (level !== 'x' || levels[input] !== 'x')
+      values[input] = level === 'x' ? `${instead}` : level;
+    levels[input] = level;
+    courses[0].push(levels.join(''));
+    courses[1].push(values.join(''));
+  }
+  return courses;
+}
 
 const bits = (count: number) => fc.array(fc.nat(1), { minLength: count, maxLength: count });
 
@@ -168,20 +185,61 @@ const cure = 'give the cell a Verilog model in a file that is named before the l
 describe('a state table that is no latch or flip-flop', () => {
   const refused =
     'not-supported 3 \'statetable ("CK D", "Q")\' the state table of cell C is not supported:';
+  const run =
+    'table-run 3 \'statetable ("CK D", "Q")\' the state table of cell C is neither a flip-flop nor a latch:';
+  // Rows of CK and D, one change at a time, and what Q is in them, of two and of three values.
   it.each([
     [
       'R L/H : - : L/H, F L/H : - : L/H, - - : - : N',
-      `${refused} both edges of CK give it a new value; use always blocks in its place; ${cure}`,
+      'both edges of CK give it a new value',
+      '00 01 11 10 00 01 11 01 00 10 00',
+      '0  0  1  1  0  0  1  1  1  0  0',
+      '00 x0 x1 11 10 1x 0x 00 10 xx x0',
+      'x  x  x  x  x  x  x  x  0  0  0',
     ],
     [
       'R L/H : - : L/H, L L : - : L, - - : - : N',
-      `${refused} its value depends on the level of CK as well as on its edge; ${cure}`,
+      'its value depends on the level of CK as well as on its edge',
+      '00 01 11 10 11 01 00 01 11 1x 11',
+      '0  0  1  1  1  1  0  0  1  1  1',
+      '00 01 x1 11 10 x0 00 0x 01 x1 11',
+      '0  0  x  x  x  x  0  0  0  x  x',
     ],
-  ])('is refused: %s', (rows, problem) => {
-    const { problems } = cellDesign(
+  ])('runs from its table: %s', async (rows, reason, plain, q, ternary, ternaryQ) => {
+    const { problems, circuit } = cellDesign(
       `${table('"CK D", "Q"', rows)}\n${inputs('CK', 'D')} ${node('Q')}`,
     );
-    expect(problems).toEqual([problem]);
+    expect(problems).toEqual([`${run} ${reason}. It runs from its table`]);
+    const known = plain.replaceAll('x', '1').split(' ');
+    expect(await responseTo(circuit!, known, { clocks: [] })).toEqual(q.split(/ +/));
+    const three = { clocks: [], threeValued: true };
+    expect(await responseTo(circuit!, ternary.split(' '), three)).toEqual(ternaryQ.split(/ +/));
+  });
+
+  it('knows with x what it does whatever the x stands for', async () => {
+    const symbol = fc.constantFrom('L', 'H', '-', '-', 'R', 'F', '~R', '~F');
+    const row = fc
+      .tuple(symbol, symbol, fc.constantFrom('-', '-', 'L', 'H'), fc.constantFrom(...'LHNNX'))
+      .map(([first, second, state, next]) => `${first} ${second} : ${state} : ${next}`);
+    const rows = fc.array(row, { minLength: 1, maxLength: 6 });
+    const move = fc.tuple(fc.nat(1), fc.constantFrom(...'01x'), fc.nat(1));
+    const moves = fc.array(move, { minLength: 20, maxLength: 40 });
+    await fc.assert(
+      fc.asyncProperty(rows, moves, async (some, changes) => {
+        const text = [...some, '- - : - : N'].join(', ');
+        const { problems, circuit } = cellDesign(
+          `${table('"A B", "Q"', text)}\n${inputs('A', 'B')} ${node('Q')}`,
+        );
+        fc.pre(problems.length === 1 && problems[0]!.startsWith('table-run'));
+        const [unsure, sure] = coursesOf(changes);
+        const options = { clocks: [], powerUp: 'zero' } as const;
+        const known = await responseTo(circuit!, unsure, { ...options, threeValued: true });
+        const actual = await responseTo(circuit!, sure, options);
+        const wrong = known.filter((value, i) => value !== 'x' && value !== actual[i]);
+        expect(wrong).toEqual([]);
+      }),
+      { seed: 20260306, numRuns: 25 },
+    );
   });
 
   it('is refused where nothing gives a node its value', () => {

@@ -130,7 +130,7 @@ describe('statements', () => {
 describe('faults', () => {
   it.each([
     ['a + 1;', "1:21 '+' expected '=' or '<=' after the target, found '+'"],
-    ['a = 1', "2:1 'endmodule' expected ';' after the assignment, found 'endmodule'"],
+    ['a = 1', "1:24 '' expected ';' after the assignment, found 'endmodule' on a later line"],
     ['u[1](a);', "1:23 '(' expected '=' or '<=' after the target, found '('"],
     ['if a b = 1;', "1:22 'a' expected '(', found 'a'"],
     [

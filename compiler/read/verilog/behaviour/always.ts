@@ -17,6 +17,7 @@ type AlwaysItem = Extract<Item, { kind: 'always' }>;
  * branches merge as in a multiplexer.
  */
 export function lowerAlways(item: AlwaysItem, scope: Scope): void {
+  scope.shared.budget.begin(item);
   const body = withoutBlocks(item.body);
   const place = { start: item.start, end: item.start };
   const context = buildingContext(scope, { clocked: false });

@@ -70,7 +70,7 @@ export function divide(
   const dividend = magnitude(a, signed, logic);
   const divisor = magnitude(b, signed, logic);
   const { quotient, remainder } = divideUnsigned(dividend.bits, divisor.bits, logic);
-  const byZero = logic.not(logic.or(...b));
+  const byZero = logic.not(logic.any(b));
   const orUnknown = (net: NetId): NetId => logic.mux(byZero, net, logic.unknown);
   const sign = logic.xor(dividend.sign, divisor.sign);
   return {

@@ -5,6 +5,7 @@ import type { EventSyntax, Statement } from '../syntax.js';
 import { netsNamed } from './combinational.js';
 import type { Context } from './context.js';
 import { lowerSelf } from './expressions.js';
+import { refuseHeld } from './heldMemory.js';
 import { refuse } from './names.js';
 import { freshRun } from './process.js';
 
@@ -137,6 +138,8 @@ function valuesUnder(
     places,
   });
   run.services.execute(body, run);
+  const [written] = run.store.finishWords().filter(({ when }) => logic.valueOf(when) !== 0);
+  if (written !== undefined) refuseHeld(written, ASYNCHRONOUS, context);
   const values = new Map<NetId, Value>();
   for (const [key, entry] of run.store.finish()) {
     if (key < 0 || run.store.loopIndexes.has(key)) continue;
@@ -148,6 +151,8 @@ function valuesUnder(
   }
   return values;
 }
+
+const ASYNCHRONOUS = 'is set or reset asynchronously; clear it word by word at clock edges';
 
 /** The levels of controls while they are not active. */
 export function fixedLevels(

@@ -1,7 +1,7 @@
 import type { SignalBinding } from '../scope.js';
 import type { Expression, Statement } from '../syntax.js';
 import { assignBits, blockingAt } from './assign.js';
-import { resize, unknownBits } from './bits.js';
+import { knownOf, resize, unknownBits } from './bits.js';
 import type { CallExpression, Context, Exits, RoutineBinding } from './context.js';
 import { LATER, Sequence } from './exits.js';
 import { lowerAssigned } from './expressions.js';
@@ -15,6 +15,8 @@ import { shapeOf } from './widths.js';
 
 /** How deep calls may nest: a recursion must end by constants alone. */
 const DEPTH_LIMIT = 200;
+
+const STEPS_OF_CALL = 30;
 
 type TaskCall = Extract<Statement, { kind: 'callTask' }>;
 
@@ -40,7 +42,11 @@ export function callFunction(expression: CallExpression, context: Context): Bits
   scope.add(syntax.name, result);
   const given = bindArguments(routine, expression, inside, context);
   if (given === undefined) return failed();
+  const { budget } = scope.shared;
+  // The stack of a call is that of two operators.
+  budget.enter(expression, 0);
   context.services.execute(syntax.body, inside);
+  budget.leave();
   const bits = result.nets.map((net) => context.store.read(net));
   context.store.forgetFrom(before);
   return bits;
@@ -57,7 +63,10 @@ export function callTask(statement: TaskCall, context: Context): Exits | undefin
   const inside = enterRoutine(routine, context);
   const given = bindArguments(routine, statement, inside, context);
   if (given === undefined) return undefined;
+  const { budget } = context.scope.shared;
+  budget.enter(statement, 0);
   const later = context.services.execute(routine.syntax.body, inside)?.get(LATER);
+  budget.leave();
   const sequence = new Sequence(context);
   if (sequence.goesOn(later === undefined ? undefined : new Map([[LATER, later]]))) {
     assignOutputs(given, statement, context);
@@ -99,6 +108,7 @@ function routineOf(
 }
 
 function enterRoutine({ syntax, scope }: RoutineBinding, context: Context): Context {
+  context.scope.shared.budget.spend(STEPS_OF_CALL);
   const local = new LocalScope(scope);
   const inside: Context = {
     ...context,
@@ -135,8 +145,11 @@ function bindArguments(
   );
   values.forEach((bits, i) => {
     const { nets } = declared[i]!.variable;
+    context.scope.shared.budget.spend(nets.length >>> 2);
     const mode = blockingAt(call.arguments[i]!.start);
     if (bits === undefined) return;
+    const known = bits.length === nets.length ? knownOf(bits, context.logic) : undefined;
+    if (known?.unknown === 0n && context.store.writeKnown(nets, known.value, mode)) return;
     resize(bits, nets.length, false, context.logic).forEach((bit, k) => {
       context.store.write(nets[k]!, bit, context.logic.one, mode);
     });

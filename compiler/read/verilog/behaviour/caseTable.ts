@@ -49,7 +49,7 @@ export function caseTable(
     arms: table,
     isDense: table.length <= 16 || filled * 4 >= table.length,
     isFull: filled === table.length,
-    lastArm: Math.max(...table),
+    lastArm: table.reduce((last, arm) => Math.max(last, arm), -1),
   };
 }
 

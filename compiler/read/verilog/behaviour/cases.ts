@@ -121,7 +121,7 @@ function executeChain(
   const { logic } = context;
   const alternatives = new Alternatives(context);
   for (const { labels, body } of arms) {
-    const condition = logic.or(...labels.map((label) => matches(subject, label, mode, context)));
+    const condition = logic.any(labels.map((label) => matches(subject, label, mode, context)));
     if (!alternatives.add(condition, body)) break;
   }
   return alternatives.finish(otherwise);
@@ -133,8 +133,8 @@ function matches(
   mode: CaseStatement['mode'],
   { logic }: Context,
 ): NetId {
-  return logic.and(
-    ...subject.map((net, i) => {
+  return logic.all(
+    subject.map((net, i) => {
       const asked = logic.valueOf(label[i]!);
       const given = logic.valueOf(net);
       if (mode !== 'case' && asked === X) return logic.one;

@@ -1,12 +1,15 @@
 import type { NetId } from '../../../circuit/ids.js';
+import { listed } from '../../listed.js';
 import type { NameId } from '../../names.js';
 import type { Binding } from '../scope.js';
 import type { EventSyntax, Expression, Statement } from '../syntax.js';
 import type { Context } from './context.js';
 import { driveBit, driveIndex, placeOf } from './drive.js';
+import { refuseHeld } from './heldMemory.js';
 import { forEachName, plainMeaningOf } from './names.js';
 import { pathText, report } from './report.js';
 import type { Changes, Entry } from './store.js';
+import { contains } from './walk.js';
 
 /**
  * Turns a level-sensitive `always` into gates, and into latches where a variable keeps its value
@@ -20,6 +23,8 @@ export function lowerCombinational(
   context.services.execute(body, context);
   const { store } = context;
   const changes = store.finish();
+  const [written] = store.finishWords();
+  if (written !== undefined) refuseHeld(written, COMBINATIONAL, context);
   if (events !== undefined) checkSensitivity(body, events, changes, context);
   const latched = new Map<NetId, Entry>();
   for (const [key, entry] of changes) {
@@ -36,16 +41,18 @@ export function lowerCombinational(
   warnLatches(body, latched, changes.size, context);
 }
 
+const COMBINATIONAL = 'is written by a process without clock; write it at clock edges';
+
 function checkSensitivity(
   body: Statement,
   events: readonly EventSyntax[],
   changes: Changes,
   context: Context,
 ): void {
-  const listed = netsNamed(events, context);
+  const named = netsNamed(events, context);
   const missing = new Set<NetId>();
   for (const net of context.store.reads) {
-    if (!listed.has(net) && !changes.has(net)) missing.add(net);
+    if (!named.has(net) && !changes.has(net)) missing.add(net);
   }
   if (missing.size === 0) return;
   const names = new Set<string>();
@@ -58,7 +65,7 @@ function checkSensitivity(
   if (names.size === 0) return;
   const place = { start: events[0]!.start, end: events.at(-1)!.end };
   const message =
-    `the event list leaves out ${[...names].join(', ')}, which ${names.size === 1 ? 'is' : 'are'} ` +
+    `the event list leaves out ${listed([...names])}, which ${names.size === 1 ? 'is' : 'are'} ` +
     'read; it is taken as @*';
   report(context.scope.shared, 'sensitivity-incomplete', place, message);
 }
@@ -85,7 +92,7 @@ function warnLatches(
   total: number,
   context: Context,
 ): void {
-  if (latched.size === 0 || (latched.size === total && !containsCase(body))) return;
+  if (latched.size === 0 || (latched.size === total && !contains(body, 'case'))) return;
   const { shared } = context.scope;
   const seen = new Set<NameId>();
   forEachName(body, (expression) => {
@@ -100,10 +107,4 @@ function warnLatches(
       'latch; assign a default first, or complete the branches';
     report(shared, 'latch-inferred', { start, end: start }, message);
   });
-}
-
-function containsCase(tree: unknown): boolean {
-  if (Array.isArray(tree)) return tree.some(containsCase);
-  if (typeof tree !== 'object' || tree === null) return false;
-  return ('kind' in tree && tree.kind === 'case') || Object.values(tree).some(containsCase);
 }

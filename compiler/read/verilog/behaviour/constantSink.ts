@@ -19,6 +19,8 @@ export const constantSink: GateSink = {
   },
   register: () => refuse('a register'),
   latch: () => refuse('a latch'),
+  readMemory: () => refuse('a word of a memory'),
+  writeMemory: () => refuse('a write to a memory'),
 };
 
 function refuse(what: string): never {

@@ -21,6 +21,13 @@ export type Exits = ReadonlyMap<NameId, NetId>;
 export interface Services {
   /** A value in the width and sign of its context; see `lower`. */
   lower(expression: Expression, context: Context, width: number, signed: boolean): Bits;
+  /** The value of an expression of plain numbers and the like; see `foldConstant`. */
+  fold(
+    expression: Expression,
+    context: Context,
+    width: number,
+    signed: boolean,
+  ): bigint | undefined;
   /** A constant as a plain number; a diagnostic and undefined if it is none. */
   integer(expression: Expression, context: Context): number | undefined;
   /** The value of a function call, in the function's own width. */

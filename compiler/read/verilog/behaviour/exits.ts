@@ -41,14 +41,16 @@ export class Sequence {
   /** Takes note of the exits of the statement just executed; false if nothing follows it. */
   goesOn(exits: Exits | undefined): boolean {
     if (exits === undefined) return true;
-    const { logic, store } = this.#context;
-    const still = logic.not(logic.or(...this.#left));
+    const { logic, store, scope } = this.#context;
+    const still = logic.not(logic.any(this.#left));
     for (const [name, condition] of exits) {
       const before = this.#exits.get(name) ?? logic.zero;
       this.#exits.set(name, logic.or(before, logic.and(still, condition)));
     }
-    const left = logic.or(...exits.values());
+    const left = logic.any([...exits.values()]);
     if (logic.valueOf(left) === 1) return false;
+    // What is read after it is looked for in all branches that are open.
+    scope.shared.budget.spend(this.#left.length);
     store.enter();
     this.#left.push(left);
     return true;

@@ -4,6 +4,7 @@ import { invert, negate } from './arithmetic.js';
 import { bitsOf, hasUnknown, resize, unknownBits } from './bits.js';
 import { isTrue } from './compare.js';
 import type { Context } from './context.js';
+import { foldSelf } from './foldConstant.js';
 import type { Bits } from './logic.js';
 import { bindingOf, refuse } from './names.js';
 import { applyCompare, applyContext, applyShift } from './operators.js';
@@ -25,18 +26,27 @@ export function lower(
   width: number,
   signed: boolean,
 ): Bits {
+  const { budget } = context.scope.shared;
+  budget.enter(expression, width);
+  let bits: Bits;
   switch (expression.kind) {
     case 'binary':
-      return lowerBinary(expression, context, width, signed);
+      bits = lowerBinary(expression, context, width, signed);
+      break;
     case 'conditional':
-      return lowerConditional(expression, context, width, signed);
+      bits = lowerConditional(expression, context, width, signed);
+      break;
     case 'unary':
-      return lowerUnary(expression, context, width, signed);
+      bits = lowerUnary(expression, context, width, signed);
+      break;
     case 'number':
-      return lowerNumber(expression, context, width, signed);
+      bits = lowerNumber(expression, context, width, signed);
+      break;
     default:
-      return resize(lowerOwn(expression, context), width, signed, context.logic);
+      bits = resize(lowerOwn(expression, context), width, signed, context.logic);
   }
+  budget.leave();
+  return bits;
 }
 
 /** The nets of an expression in its own width and sign (self-determined, clause 5.4.1). */
@@ -54,6 +64,10 @@ export function lowerAssigned(expression: Expression, context: Context, width: n
 
 /** The truth value of an expression as a condition. */
 export function lowerCondition(expression: Expression, context: Context): NetId {
+  if (context.access !== 'all') {
+    const folded = foldSelf(expression, context);
+    if (folded !== undefined) return context.logic.constant(folded === 0n ? 0 : 1);
+  }
   return isTrue(lowerSelf(expression, context), context.logic);
 }
 
@@ -76,13 +90,8 @@ function lowerOwn(
       const once = lowerParts(expression.parts, context);
       return Array.from({ length: width }, (_, i) => once[i % once.length]!);
     }
-    case 'string': {
-      const bytes = new TextEncoder().encode(expression.text);
-      let value = 0n;
-      for (const byte of bytes) value = (value << 8n) | BigInt(byte);
-      const width = Math.max(1, bytes.length) * 8;
-      return bitsOf({ value, unknown: 0n }, width, context.logic);
-    }
+    case 'string':
+      return lowerString(expression, context);
     case 'call':
       return context.services.call(expression, context);
     case 'real':
@@ -91,12 +100,24 @@ function lowerOwn(
   }
 }
 
+function lowerString(expression: Extract<Expression, { kind: 'string' }>, context: Context): Bits {
+  const { width } = shapeOf(expression, context);
+  const bytes = new TextEncoder().encode(expression.text);
+  const last = bytes.subarray(Math.max(0, bytes.length - Math.ceil(width / 8)));
+  const digits = Array.from(last, (byte) => byte.toString(16).padStart(2, '0')).join('');
+  const value = BigInt(`0x0${digits}`);
+  return bitsOf({ value, unknown: 0n }, width, context.logic);
+}
+
 function lowerName(expression: Extract<Expression, { kind: 'name' }>, context: Context): Bits {
   const { logic, store, scope } = context;
   const binding = bindingOf(expression, context);
   if (binding?.kind === 'parameter') return bitsOf(binding.value, binding.value.width, logic);
   if (binding?.kind === 'signal') {
     if (!mayRead(expression, binding, context)) return unknownBits(binding.nets.length, logic);
+    const known = store.known(binding.nets);
+    if (known !== undefined)
+      return bitsOf({ value: known, unknown: 0n }, binding.nets.length, logic);
     return binding.nets.map((net) => store.read(net));
   }
   if (binding !== undefined) {
@@ -167,18 +188,18 @@ function reduce(
 ): NetId {
   switch (operator) {
     case '&':
-      return logic.and(...bits);
+      return logic.all(bits);
     case '~&':
-      return logic.not(logic.and(...bits));
+      return logic.not(logic.all(bits));
     case '|':
-      return logic.or(...bits);
+      return logic.any(bits);
     case '~|':
     case '!':
-      return logic.not(logic.or(...bits));
+      return logic.not(logic.any(bits));
     case '^':
-      return logic.xor(...bits);
+      return logic.parity(bits);
     case '~^':
-      return logic.xor(...bits, logic.one);
+      return logic.parity(bits, true);
   }
 }
 

@@ -2,7 +2,7 @@ import type { NetId } from '../../../circuit/ids.js';
 import type { Constant, Scope } from '../scope.js';
 import type { Expression } from '../syntax.js';
 import { lowerAssigned, lowerSelf } from './expressions.js';
-import { constantContext, expressionContext } from './process.js';
+import { expressionContext, withConstants } from './process.js';
 import { realConstant } from './realConstant.js';
 import { report } from './report.js';
 import { targetPieces } from './targets.js';
@@ -18,7 +18,10 @@ export { lowerInitial } from './initial.js';
  * rounded to a whole one. Returns undefined after a diagnostic.
  */
 export function evaluateConstant(expression: Expression, scope: Scope): Constant | undefined {
-  return realConstant(expression) ?? constantIn(expression, constantContext(scope));
+  scope.shared.budget.begin(expression);
+  return (
+    realConstant(expression) ?? withConstants(scope, (context) => constantIn(expression, context))
+  );
 }
 
 /**
@@ -33,6 +36,7 @@ export function lowerExpression(
   scope: Scope,
   targetWidth?: number,
 ): NetId[] {
+  scope.shared.budget.begin(expression);
   const context = expressionContext(scope);
   return targetWidth === undefined
     ? [...lowerSelf(expression, context)]
@@ -46,6 +50,7 @@ export function lowerExpression(
  * nothing reads. Returns undefined after an error.
  */
 export function lowerTarget(expression: Expression, scope: Scope): NetId[] | undefined {
+  scope.shared.budget.begin(expression);
   const context = expressionContext(scope);
   const pieces = targetPieces(expression, 'net', context);
   if (pieces === undefined) return undefined;

@@ -2,6 +2,7 @@ import type { NetId } from '../../../circuit/ids.js';
 import { X } from '../../../circuit/values.js';
 import type { Scope } from '../scope.js';
 import type { Item } from '../syntax.js';
+import { writeContents } from './heldMemory.js';
 import { powerUpContext } from './process.js';
 
 /**
@@ -10,7 +11,8 @@ import { powerUpContext } from './process.js';
  * control happens later than power-up; it is left out with a warning.
  */
 export function lowerInitial(item: Extract<Item, { kind: 'initial' }>, scope: Scope): void {
-  const { initialValues } = scope.shared;
+  const { initialValues, budget } = scope.shared;
+  budget.begin(item);
   const context = powerUpContext(scope, (net) => initialValues.get(net) ?? X);
   context.services.execute(item.body, context);
   const { store, logic } = context;
@@ -18,6 +20,7 @@ export function lowerInitial(item: Extract<Item, { kind: 'initial' }>, scope: Sc
     if (key < 0 || store.loopIndexes.has(key)) continue;
     setInitial(key, logic.valueOf(store.resolve(key, entry)), initialValues);
   }
+  writeContents(store.finishWords(), logic);
 }
 
 function setInitial(key: NetId, value: number | undefined, initialValues: Map<NetId, 0 | 1>): void {

@@ -22,6 +22,11 @@ export class LocalScope implements Scope {
     this.#refused.set(name, type);
   }
 
+  *visibleNames(): Iterable<string> {
+    for (const name of this.#names.keys()) yield this.shared.names.text(name);
+    yield* this.#outer.visibleNames?.() ?? [];
+  }
+
   unusable(name: NameId): Unusable | undefined {
     return this.#refused.get(name) ?? this.#outer.unusable?.(name);
   }

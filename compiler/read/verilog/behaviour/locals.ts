@@ -6,7 +6,7 @@ import { bitsOf, knownOf, resize } from './bits.js';
 import type { Context } from './context.js';
 import type { LocalScope } from './localScope.js';
 import { refuse } from './names.js';
-import { type Placed, pathText, report } from './report.js';
+import { type Placed, report } from './report.js';
 import { constantIn, integerOf, MAX_WIDTH } from './widths.js';
 
 /** Left and right number of a declaration. */
@@ -103,15 +103,18 @@ function localMemory(
   signed: boolean,
   context: Context,
 ): Binding {
-  if (dimensions.length > 1) {
-    const text = pathText(context.scope.shared, [name]);
-    refuse(context, { start, end }, `\`${text}\` has several dimensions; use one index`);
-  }
-  const range = checkedRange(dimensions[0]!, context) ?? { msb: 0, lsb: 0 };
-  const low = Math.min(range.msb, range.lsb);
-  const high = Math.max(range.msb, range.lsb);
-  const words = Array.from({ length: high - low + 1 }, () => localBits(msb, lsb, context));
-  return { kind: 'memory', name, msb, lsb, signed, isVariable: true, low, high, words };
+  const indices = dimensions.map((dimension) => {
+    const range = checkedRange(dimension, context) ?? { msb: 0, lsb: 0 };
+    return { low: Math.min(range.msb, range.lsb), high: Math.max(range.msb, range.lsb) };
+  });
+  const count = indices.reduce((product, { low, high }) => product * (high - low + 1), 1);
+  if (count > MAX_WIDTH) reportTooLarge({ start, end }, context);
+  // The words take time and room wherever the routine is called.
+  context.scope.shared.budget.spend((count * (Math.abs(msb - lsb) + 1)) / 8);
+  const words = Array.from({ length: Math.min(count, MAX_WIDTH) }, () =>
+    localBits(msb, lsb, context),
+  );
+  return { kind: 'memory', name, msb, lsb, signed, isVariable: true, indices, words };
 }
 
 function declareParameters(item: ParameterItem, scope: LocalScope, context: Context): void {

@@ -1,7 +1,11 @@
 import { GateKind } from '../../../circuit/gates.js';
 import type { NetId } from '../../../circuit/ids.js';
 import { type Value, X } from '../../../circuit/values.js';
+import type { Budget } from '../budget.js';
 import type { GateSink } from '../scope.js';
+import { GateTable, NO_GATE } from './gateTable.js';
+
+const STEPS_OF_GATE = 3;
 
 /** The nets of a value, least significant bit first. */
 export type Bits = readonly NetId[];
@@ -14,18 +18,22 @@ export type Bits = readonly NetId[];
  */
 export class Logic {
   readonly sink: GateSink;
+  readonly #budget: Budget | undefined;
   readonly #constants: (NetId | undefined)[] = [];
-  readonly #made = new Map<string, NetId>();
-  readonly #inverse = new Map<NetId, NetId>();
+  // Constants need neither.
+  #made: GateTable | undefined;
+  #inverse: Map<NetId, NetId> | undefined;
 
-  constructor(sink: GateSink) {
+  /** `budget` is charged for the gates made. */
+  constructor(sink: GateSink, budget?: Budget) {
     this.sink = sink;
+    this.#budget = budget;
   }
 
   /** Forgets the gates made, but for constants: the next ones are made anew. */
   clear(): void {
-    this.#made.clear();
-    this.#inverse.clear();
+    this.#made?.clear();
+    this.#inverse?.clear();
   }
 
   get zero(): NetId {
@@ -68,6 +76,7 @@ export class Logic {
   not(a: NetId): NetId {
     const value = this.valueOf(a);
     if (value !== undefined) return this.constant(value === X ? X : value === 0 ? 1 : 0);
+    this.#inverse ??= new Map();
     let inverse = this.#inverse.get(a);
     if (inverse === undefined) {
       inverse = this.sink.gate(GateKind.Not, [a]);
@@ -78,15 +87,30 @@ export class Logic {
   }
 
   and(...inputs: Bits): NetId {
-    return this.#dominated(GateKind.And, inputs, 0);
+    return this.all(inputs);
   }
 
   or(...inputs: Bits): NetId {
-    return this.#dominated(GateKind.Or, inputs, 1);
+    return this.any(inputs);
   }
 
   xor(...inputs: Bits): NetId {
-    let odd = false;
+    return this.parity(inputs);
+  }
+
+  /** Whether all of some bits are 1. */
+  all(inputs: Bits): NetId {
+    return this.#dominated(GateKind.And, inputs, 0);
+  }
+
+  /** Whether any of some bits is 1. */
+  any(inputs: Bits): NetId {
+    return this.#dominated(GateKind.Or, inputs, 1);
+  }
+
+  /** Whether an odd number of some bits is 1, or an even one where `isEven` is set. */
+  parity(inputs: Bits, isEven = false): NetId {
+    let odd = isEven;
     const rest: NetId[] = [];
     for (const net of inputs) {
       const value = this.valueOf(net);
@@ -96,7 +120,7 @@ export class Logic {
     }
     if (rest.length === 0) return this.constant(odd ? 1 : 0);
     if (rest.length === 1) return odd ? this.not(rest[0]!) : rest[0]!;
-    return this.#gate(odd ? GateKind.Xnor : GateKind.Xor, rest.sort(ascending));
+    return this.#gate(odd ? GateKind.Xnor : GateKind.Xor, sorted(rest));
   }
 
   xnor(a: NetId, b: NetId): NetId {
@@ -122,32 +146,47 @@ export class Logic {
 
   // And with its dominating 0, or with its dominating 1.
   #dominated(kind: GateKind, inputs: Bits, dominating: 0 | 1): NetId {
-    const rest = new Set<NetId>();
+    const rest: NetId[] = [];
     let unknown = false;
     for (const net of inputs) {
       const value = this.valueOf(net);
       if (value === dominating) return net;
-      if (value === undefined) rest.add(net);
+      if (value === undefined) rest.push(net);
       else if (value === X) unknown = true;
     }
-    if (unknown) rest.add(this.unknown);
-    const nets = [...rest];
+    if (unknown) rest.push(this.unknown);
+    const nets = distinct(sorted(rest));
     if (nets.length === 0) return this.constant(dominating === 0 ? 1 : 0);
     if (nets.length === 1) return nets[0]!;
-    return this.#gate(kind, nets.sort(ascending));
+    return this.#gate(kind, nets);
   }
 
   #gate(kind: GateKind, inputs: Bits): NetId {
-    const key = `${kind},${inputs.join()}`;
-    let net = this.#made.get(key);
-    if (net === undefined) {
-      net = this.sink.gate(kind, inputs);
-      this.#made.set(key, net);
-    }
+    this.#made ??= new GateTable();
+    const known = this.#made.find(kind, inputs);
+    if (known !== NO_GATE) return known;
+    this.#budget?.spend(STEPS_OF_GATE + (inputs.length >> 2));
+    const net = this.sink.gate(kind, inputs);
+    this.#made.add(kind, inputs, net);
     return net;
   }
 }
 
-function ascending(a: number, b: number): number {
-  return a - b;
+/** Sorts a list in place; most have two entries. */
+function sorted(nets: NetId[]): NetId[] {
+  if (nets.length !== 2) return nets.sort((a, b) => a - b);
+  const [a, b] = nets as [NetId, NetId];
+  if (a > b) {
+    nets[0] = b;
+    nets[1] = a;
+  }
+  return nets;
+}
+
+/** A sorted list with each entry once. */
+function distinct(nets: NetId[]): NetId[] {
+  let count = 0;
+  for (const net of nets) if (count === 0 || nets[count - 1] !== net) nets[count++] = net;
+  nets.length = count;
+  return nets;
 }

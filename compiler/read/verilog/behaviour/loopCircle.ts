@@ -4,8 +4,12 @@ import { knownOf } from './bits.js';
 import type { Context } from './context.js';
 import { forEachName, meaningOf } from './names.js';
 import { pathText, report } from './report.js';
+import { contains } from './walk.js';
 
 type ForStatement = Extract<Statement, { kind: 'for' }>;
+
+/** Turns after the first that are not looked at, as nearly all loops end among them. */
+const BLIND_TURNS = 500;
 
 /** Sees whether a `for` loop goes in circles, because its index is too narrow for its end. */
 export class LoopCircle {
@@ -14,6 +18,7 @@ export class LoopCircle {
   readonly #values = new Set<bigint>();
   #index: SignalBinding | undefined;
   #value: bigint | undefined;
+  #turn = 0;
 
   /** To be made once the index has its first value. */
   constructor(statement: ForStatement, context: Context) {
@@ -27,6 +32,8 @@ export class LoopCircle {
 
   /** Takes note of the index before a turn; a value that it had before ends all unrolling. */
   startTurn(): void {
+    const turn = this.#turn++;
+    if (turn > 0 && turn <= BLIND_TURNS) return;
     this.#value = this.#valueNow();
     if (this.#index === undefined || this.#value === undefined) return;
     if (!this.#values.has(this.#value)) {
@@ -40,12 +47,15 @@ export class LoopCircle {
 
   /** Looks whether the body, which has just been executed, has left the index alone. */
   endTurn(): void {
+    if (this.#turn > 1 && this.#turn <= BLIND_TURNS + 1) return;
     if (this.#valueNow() !== this.#value) this.#index = undefined;
   }
 
   #valueNow(): bigint | undefined {
     const { store, logic } = this.#context;
     if (this.#index === undefined) return undefined;
+    const value = store.known(this.#index.nets);
+    if (value !== undefined) return value;
     const bits = this.#index.nets.map((net) => store.read(net));
     const known = knownOf(bits, logic);
     return known?.unknown === 0n ? known.value : undefined;
@@ -77,13 +87,4 @@ function decidesAlone(
       (binding?.kind === 'signal' && binding.nets[0] === index.nets[0]);
   });
   return isAlone;
-}
-
-function contains(tree: unknown, kind: 'call' | 'disable'): boolean {
-  if (Array.isArray(tree)) return tree.some((part) => contains(part, kind));
-  if (typeof tree !== 'object' || tree === null) return false;
-  return (
-    ('kind' in tree && tree.kind === kind) ||
-    Object.values(tree).some((part) => contains(part, kind))
-  );
 }

@@ -2,12 +2,19 @@ import type { AssignStatement, Expression, Statement } from '../syntax.js';
 import type { Context, Exits } from './context.js';
 import { Sequence } from './exits.js';
 import { lowerCondition } from './expressions.js';
+import { foldSelf } from './foldConstant.js';
 import { LoopCircle } from './loopCircle.js';
+import { isPowerUp } from './powerUp.js';
 import { type Placed, report } from './report.js';
 import { countOf } from './widths.js';
 
-/** How often the body of one loop is executed at most. */
+/** How often the body of one loop is executed at most: where it makes gates, and at power-up. */
 const LOOP_LIMIT = 65536;
+const POWER_UP_LIMIT = 2 ** 20;
+
+const limitOf = (context: Context): number => (isPowerUp(context) ? POWER_UP_LIMIT : LOOP_LIMIT);
+
+const STEPS_OF_TURN = 4;
 
 type Assign = (statement: AssignStatement, context: Context, isLoopIndex: boolean) => void;
 
@@ -41,7 +48,7 @@ export function executeRepeat(
   context: Context,
 ): Exits | undefined {
   const count = countOf(statement.count, context, 0) ?? 0;
-  if (count > LOOP_LIMIT) abort(statement.count, context);
+  if (count > limitOf(context)) abort(statement.count, context);
   const sequence = new Sequence(context);
   for (let i = 0; i < count && !context.store.aborted; i++) {
     if (!sequence.goesOn(context.services.execute(statement.body, context))) break;
@@ -56,8 +63,9 @@ function unroll(
   step: () => void,
 ): Exits | undefined {
   const sequence = new Sequence(context);
+  const limit = limitOf(context);
   for (let i = 0; goesOn(condition, context); i++) {
-    if (i === LOOP_LIMIT) {
+    if (i === limit) {
       abort(condition, context);
       break;
     }
@@ -69,6 +77,11 @@ function unroll(
 
 function goesOn(condition: Expression, context: Context): boolean {
   if (context.store.aborted) return false;
+  const folded = foldSelf(condition, context);
+  if (folded !== undefined) {
+    context.scope.shared.budget.spend(STEPS_OF_TURN);
+    return folded !== 0n;
+  }
   const value = context.logic.valueOf(lowerCondition(condition, context));
   if (value !== undefined) return value === 1;
   context.store.aborted = true;
@@ -81,7 +94,7 @@ function goesOn(condition: Expression, context: Context): boolean {
 function abort(place: Placed, context: Context): void {
   context.store.aborted = true;
   const message =
-    `this loop runs more than ${LOOP_LIMIT} times, too often to unroll; ` +
+    `this loop runs more than ${limitOf(context)} times, too often to unroll; ` +
     'give it smaller bounds or spread it over clock cycles';
   report(context.scope.shared, 'loop-unbounded', place, message);
 }

@@ -1,10 +1,12 @@
 import type { DiagnosticCode } from '../../../diagnostics/codes.js';
 import type { NameId } from '../../names.js';
+import { hintOf } from '../../nearest.js';
 import type { Binding, Unusable } from '../scope.js';
 import type { Expression } from '../syntax.js';
 import type { Context } from './context.js';
 import { resolveCalled } from './localScope.js';
 import { type Placed, pathText, report } from './report.js';
+import { walk } from './walk.js';
 
 /** A name as it is used at a place; `indices` as in `NameExpression`. */
 interface Named extends Placed {
@@ -58,8 +60,9 @@ function found(binding: Binding | undefined, named: Named, context: Context): Bi
   const { shared } = scope;
   const text = pathText(shared, named.path);
   const reason = named.path.length === 1 ? scope.unusable?.(named.path[0]!) : undefined;
+  const hint = reason === undefined ? hintOf(text, scope.visibleNames?.() ?? []) : '';
   const [code, message] = reason === undefined ? unknown : unusable[reason];
-  report(shared, code, named, `\`${text}\` ${message}`);
+  report(shared, code, named, `\`${text}\` ${message}${hint}`);
   return undefined;
 }
 
@@ -95,15 +98,11 @@ export function forEachName(
   tree: unknown,
   visit: (expression: Extract<Expression, { kind: 'name' }>) => void,
 ): void {
-  if (Array.isArray(tree)) {
-    for (const part of tree) forEachName(part, visit);
-  } else if (typeof tree === 'object' && tree !== null) {
-    if ('kind' in tree && tree.kind === 'name') {
-      visit(tree as Extract<Expression, { kind: 'name' }>);
-    } else {
-      for (const part of Object.values(tree)) forEachName(part, visit);
-    }
-  }
+  walk(tree, (node) => {
+    if (node.kind !== 'name') return true;
+    visit(node as Extract<Expression, { kind: 'name' }>);
+    return false;
+  });
 }
 
 /** Reports a construct outside what can be built, with the way out. */

@@ -1,10 +1,11 @@
 import type { NetId } from '../../../circuit/ids.js';
 import type { Value } from '../../../circuit/values.js';
-import type { Scope } from '../scope.js';
+import type { Elaboration, Scope } from '../scope.js';
 import { callFunction } from './calls.js';
 import { constantSink } from './constantSink.js';
 import type { Context, Services } from './context.js';
 import { lower } from './expressions.js';
+import { foldConstant } from './foldConstant.js';
 import { Logic } from './logic.js';
 import { executeStatement } from './statements.js';
 import { Store, type StoreOptions } from './store.js';
@@ -12,6 +13,7 @@ import { integerOf } from './widths.js';
 
 const services: Services = {
   lower,
+  fold: foldConstant,
   integer: integerOf,
   call: callFunction,
   execute: executeStatement,
@@ -19,18 +21,20 @@ const services: Services = {
 
 /** A context that builds gates into the scope's sink, with a store of its own. */
 export function buildingContext(scope: Scope, options?: StoreOptions): Context {
-  const logic = new Logic(scope.shared.builder);
+  const logic = new Logic(scope.shared.builder, scope.shared.budget);
   return contextOf(scope, new Store(logic, options), 'all');
 }
 
-const expressionContexts = new WeakMap<Scope, Context>();
+const expressionContexts = new WeakMap<Elaboration, Context>();
 
-/** A context for one expression outside of procedures; made once for each scope. */
+/** A context for one expression outside of procedures; the next call makes it void. */
 export function expressionContext(scope: Scope): Context {
-  let context = expressionContexts.get(scope);
-  if (context === undefined) {
-    context = buildingContext(scope);
-    expressionContexts.set(scope, context);
+  const { shared } = scope;
+  let context = expressionContexts.get(shared);
+  if (context?.scope !== scope) {
+    // A module may have a hundred thousand scopes, of which each has few expressions.
+    context = context === undefined ? buildingContext(scope) : { ...context, scope };
+    expressionContexts.set(shared, context);
   }
   // Netlists are full of tiny assignments, so that making a context would take most of the time.
   context.logic.clear();
@@ -43,9 +47,35 @@ export function freshRun(context: Context, options: StoreOptions): Context {
   return { ...context, store: new Store(context.logic, options), blocks: new Map() };
 }
 
-/** A context in which all is constant: no signal may be read. */
-export function constantContext(scope: Scope): Context {
-  return contextOf(scope, new Store(new Logic(constantSink)), 'locals');
+/** Contexts for constants, one for each that is being worked out inside of another. */
+const constantContexts = new WeakMap<Elaboration, { used: number; readonly list: Context[] }>();
+
+/**
+ * Works something out in a context in which all is constant: no signal may be read. The context is
+ * void afterwards.
+ */
+export function withConstants<T>(scope: Scope, work: (context: Context) => T): T {
+  const { shared } = scope;
+  let known = constantContexts.get(shared);
+  if (known === undefined) {
+    known = { used: 0, list: [] };
+    constantContexts.set(shared, known);
+  }
+  const { used, list } = known;
+  let context = list[used];
+  if (context?.scope !== scope) {
+    context =
+      context === undefined
+        ? contextOf(scope, new Store(new Logic(constantSink)), 'locals')
+        : { ...context, scope };
+    list[used] = context;
+  }
+  known.used++;
+  context.store.clear();
+  context.blocks.clear();
+  const result = work(context);
+  known.used = used;
+  return result;
 }
 
 /** A context for power-up: `outside` gives the values that variables have so far. */

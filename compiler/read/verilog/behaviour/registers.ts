@@ -7,6 +7,7 @@ import { driveIndex, placeOf } from './drive.js';
 import type { Logic } from './logic.js';
 import { freshRun } from './process.js';
 import type { Entry } from './store.js';
+import { joinedWrites } from './wordWrites.js';
 
 /** Turns an edge-sensitive `always` into registers (IEEE 1364.1-2002, clause 5.2). */
 export function lowerClocked(
@@ -34,6 +35,26 @@ export function lowerClocked(
   }
   for (const key of new Set(controls.asynchronous.flatMap(({ values }) => [...values.keys()]))) {
     if (!changes.has(key)) buildRegister(key, undefined, controls, run);
+  }
+  buildWrites(controls, run);
+}
+
+// Where an asynchronous control is active, no clock edge writes.
+function buildWrites({ clock, asynchronous }: Controls, { store, logic }: Context): void {
+  const active = asynchronous.map(({ edge }) =>
+    edge.level === 1 ? edge.net : logic.not(edge.net),
+  );
+  const isIdle = logic.not(logic.any(active));
+  for (const { memory, when, address, data, mask } of joinedWrites(store.finishWords(), logic)) {
+    const enable = logic.and(when, isIdle);
+    logic.sink.writeMemory(memory.number, {
+      clock: clock.net,
+      edge: clock.level === 1 ? Edge.Rising : Edge.Falling,
+      ...(logic.valueOf(enable) !== 1 && { enable }),
+      address,
+      data,
+      ...(mask.some((net) => logic.valueOf(net) !== 1) && { mask }),
+    });
   }
 }
 
@@ -93,7 +114,7 @@ function asyncPins(key: NetId, controls: readonly AsyncControl[], logic: Logic):
   }
   const first = controls.find(({ values }) => values.has(key));
   const priority = first?.values.get(key) === 1 ? Priority.SetWins : Priority.ResetWins;
-  return { set: logic.or(...sets), reset: logic.or(...resets), priority, holding };
+  return { set: logic.any(sets), reset: logic.any(resets), priority, holding };
 }
 
 // Set, reset and set again in order of priority: no single priority tells which of the two wins.

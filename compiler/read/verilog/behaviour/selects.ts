@@ -1,16 +1,26 @@
 import type { NetId } from '../../../circuit/ids.js';
 import type { MemoryBinding, SignalBinding } from '../scope.js';
 import type { Expression, NameExpression, PartExpression, SelectExpression } from '../syntax.js';
-import { bitsOf, knownOf, signedValue, unknownBits } from './bits.js';
+import { bitsOf, unknownBits } from './bits.js';
 import type { Context } from './context.js';
+import { heldPlace, readHeld } from './heldMemory.js';
+import { type IndexValue, indexValue, warnOutside } from './indexValue.js';
 import type { Bits, Logic } from './logic.js';
-import { bindingOf, refuse } from './names.js';
+import {
+  constantWord,
+  indexValues,
+  isNear,
+  readNets,
+  reportIndices,
+  type WordSelect,
+  withinMemoryLimit,
+  wordSelectOf,
+  wordWidth,
+} from './memorySelect.js';
+import { bindingOf } from './names.js';
 import { pathText, report } from './report.js';
 import { integerOf, partWidth, shapeOf } from './widths.js';
 import { indexOf, readWindow } from './window.js';
-
-/** The largest memory, in bits, that is read or written at a variable address. */
-const MEMORY_LIMIT = 4096;
 
 /** Bits with declared numbers, from which bits and parts are selected. */
 interface Vector {
@@ -21,25 +31,6 @@ interface Vector {
   readonly at: (position: number) => NetId;
 }
 
-/** The value of an index, constant or not. */
-export type IndexValue =
-  | { readonly kind: 'constant'; readonly value: number }
-  | { readonly kind: 'unknown' }
-  | { readonly kind: 'variable'; readonly bits: Bits; readonly signed: boolean };
-
-/** Works out an index; a constant too large to be in any range counts as just that. */
-export function indexValue(expression: Expression, context: Context): IndexValue {
-  const { width, signed } = shapeOf(expression, context);
-  const bits = context.services.lower(expression, context, width, signed);
-  const known = knownOf(bits, context.logic);
-  if (known === undefined) return { kind: 'variable', bits, signed };
-  if (known.unknown !== 0n) return { kind: 'unknown' };
-  return {
-    kind: 'constant',
-    value: Number(signed ? signedValue(known.value, width) : known.value),
-  };
-}
-
 /** Place from the right of a bit by its declared number; not in 0 … width-1 if there is none. */
 export function positionOf(vector: { msb: number; lsb: number }, index: number): number {
   return vector.msb >= vector.lsb ? index - vector.lsb : vector.lsb - index;
@@ -47,14 +38,9 @@ export function positionOf(vector: { msb: number; lsb: number }, index: number):
 
 /** The value of `a[i]`: a bit, or a word of a memory. */
 export function readSelect(expression: SelectExpression, context: Context): Bits {
-  const { base } = expression;
-  if (base.kind === 'name') {
-    const binding = bindingOf(base, context);
-    if (binding?.kind === 'memory') {
-      return readWord(binding, expression, context) ?? unknownBits(1, context.logic);
-    }
-  }
-  const vector = vectorOf(base, context);
+  const word = wordSelectOf(expression, context);
+  if (word !== undefined) return readWord(word, context) ?? unknownBits(1, context.logic);
+  const vector = vectorOf(expression.base, context);
   if (vector === undefined) return unknownBits(1, context.logic);
   const index = indexValue(expression.index, context);
   if (index.kind === 'unknown') return unknownBits(1, context.logic);
@@ -118,15 +104,18 @@ export function partOf<V extends { msb: number; lsb: number }>(
 
 /** What a bit or part is selected from, named or a word of a memory. */
 function vectorOf(base: NameExpression | SelectExpression, context: Context): Vector | undefined {
-  const name = base.kind === 'select' && base.base.kind === 'name' ? base.base : base;
-  const binding = name.kind === 'name' ? bindingOf(name, context) : undefined;
-  if (name.kind === 'name' && binding === undefined) return undefined;
-  if (binding?.kind === 'memory' && base.kind === 'select') {
-    const word = readWord(binding, base, context);
+  const select = wordSelectOf(base, context);
+  if (select !== undefined) {
+    const word = readWord(select, context);
     if (word === undefined) return undefined;
-    const { msb, lsb } = binding;
+    const { msb, lsb } = select.memory;
     return { width: word.length, msb, lsb, at: (i) => word[i]! };
   }
+  let name: Expression = base;
+  while (name.kind === 'select') name = name.base;
+  const binding = name.kind === 'name' ? bindingOf(name, context) : undefined;
+  if (name.kind === 'name' && binding === undefined) return undefined;
+  if (reportIndices(base, context)) return undefined;
   if (base.kind === 'name' && binding?.kind === 'parameter') {
     const { value, msb, lsb } = binding;
     const bits = bitsOf(value, value.width, context.logic);
@@ -178,48 +167,18 @@ export function isAccessible(binding: SignalBinding | MemoryBinding, { access }:
   return (first ?? 0) < 0;
 }
 
-function readWord(
-  memory: MemoryBinding,
-  expression: SelectExpression,
-  context: Context,
-): Bits | undefined {
-  const { logic, store } = context;
-  const width = Math.abs(memory.msb - memory.lsb) + 1;
-  if (!mayRead(expression.base as NameExpression, memory, context)) return undefined;
-  const index = indexValue(expression.index, context);
-  if (index.kind === 'unknown') return unknownBits(width, logic);
-  if (index.kind === 'constant') {
-    const word = memory.words[index.value - memory.low];
-    if (word !== undefined) return word.map((net) => store.read(net));
-    warnOutside(expression, memory.low, memory.high, context);
-    return unknownBits(width, logic);
+function readWord(select: WordSelect, context: Context): Bits | undefined {
+  const { memory, name } = select;
+  if (!mayRead(name, memory, context) || !isNear(select, context)) return undefined;
+  const values = indexValues(select, context);
+  if (typeof values === 'string') return unknownBits(wordWidth(memory), context.logic);
+  const word = constantWord(memory, values);
+  if (memory.held !== undefined) {
+    return readHeld(heldPlace(memory, memory.held, values, context), context, word);
   }
-  if (!withinMemoryLimit(memory, expression, context)) return undefined;
-  const address = indexOf(index.bits, index.signed, memory.low, memory.high, logic);
-  return Array.from({ length: width }, (_, bit) => {
-    const leaf = (i: number): NetId => {
-      const net = memory.words[i - memory.low]?.[bit];
-      return net === undefined ? logic.unknown : store.read(net);
-    };
-    return readWindow(address, 1, leaf, logic)[0]!;
-  });
-}
-
-/** Whether a memory is small enough for a multiplexer tree or registers; a diagnostic if not. */
-export function withinMemoryLimit(
-  memory: MemoryBinding,
-  expression: SelectExpression,
-  context: Context,
-): boolean {
-  const bits = memory.words.length * (Math.abs(memory.msb - memory.lsb) + 1);
-  if (bits <= MEMORY_LIMIT) return true;
-  refuse(
-    context,
-    expression,
-    `a memory of ${bits} bits is more than can be built from registers (${MEMORY_LIMIT}); ` +
-      'make it smaller or split it into several memories',
-  );
-  return false;
+  if (word !== undefined) return memory.words[word]!.map((net) => context.store.read(net));
+  if (!withinMemoryLimit(select, context)) return undefined;
+  return readNets(memory, values, context);
 }
 
 /** Bits from a fixed place on; x, and a warning, for those that are not there. */
@@ -234,22 +193,6 @@ function readFrom(
     warnOutside(place, vector.msb, vector.lsb, context);
   }
   return Array.from({ length: width }, (_, i) => bitAt(vector, start + i, context.logic));
-}
-
-/** Says that a select with constant numbers is outside of what was declared. */
-export function warnOutside(
-  place: SelectExpression | PartExpression,
-  left: number,
-  right: number,
-  context: Context,
-): void {
-  report(
-    context.scope.shared,
-    'select-outside',
-    place,
-    `this select is not all within [${left}:${right}]; what lies outside reads as x and is not ` +
-      'written',
-  );
 }
 
 // Bit k of the result is `offset + k` places left of the bit that the index names. With a

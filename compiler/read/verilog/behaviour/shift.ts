@@ -21,7 +21,7 @@ export function shift(
       result = result.map((net, k) => logic.mux(select, net, moved[k]!));
     }
   });
-  const gone = logic.or(...tooFar);
+  const gone = logic.any(tooFar);
   return result.map((net) => logic.mux(gone, net, fill));
 }
 

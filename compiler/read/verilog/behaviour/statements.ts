@@ -18,6 +18,14 @@ import { executeSystemTask } from './systemTasks.js';
 /** Executes a statement symbolically on the context's store (clause 9). */
 export function executeStatement(statement: Statement, context: Context): Exits | undefined {
   if (context.store.aborted) return undefined;
+  const { budget } = context.scope.shared;
+  budget.enter(statement, 0);
+  const exits = executeKind(statement, context);
+  budget.leave();
+  return exits;
+}
+
+function executeKind(statement: Statement, context: Context): Exits | undefined {
   switch (statement.kind) {
     case 'block':
       return executeBlock(statement, context);

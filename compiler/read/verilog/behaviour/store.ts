@@ -1,7 +1,10 @@
 import { type NetId, netId } from '../../../circuit/ids.js';
 import type { Position } from '../../../diagnostics/sourceMap.js';
+import type { HeldMemory } from '../scope.js';
+import { KnownWords } from './knownWords.js';
 import type { Bits, Logic } from './logic.js';
 import { selectFrom } from './tables.js';
+import { eitherWrites, tableWrites, type WordWrite } from './wordWrites.js';
 
 /** What was assigned to one bit: a value, and the condition under which it was. */
 export interface Entry {
@@ -16,6 +19,9 @@ export type Changes = Map<NetId, Entry>;
 export interface Branch {
   readonly now: Changes;
   readonly later: Changes;
+  /** Words of held memories written likewise, in order. */
+  readonly nowWords: readonly WordWrite[];
+  readonly laterWords: readonly WordWrite[];
 }
 
 /** How a store treats what lies outside the process it serves. */
@@ -28,7 +34,19 @@ export interface StoreOptions {
   readonly places?: Map<NetId, Position>;
 }
 
-const emptyBranch = (): Branch => ({ now: new Map(), later: new Map() });
+interface OpenBranch extends Branch {
+  nowWords: readonly WordWrite[];
+  laterWords: readonly WordWrite[];
+}
+
+const noWords: readonly WordWrite[] = [];
+
+const emptyBranch = (): OpenBranch => ({
+  now: new Map(),
+  later: new Map(),
+  nowWords: noWords,
+  laterWords: noWords,
+});
 
 /**
  * The values of variables while a process is executed symbolically.
@@ -49,8 +67,11 @@ export class Store {
   /** Set once a call or loop has gone too far, so that nothing further is unrolled. */
   aborted = false;
   readonly #options: StoreOptions;
-  readonly #layers: Branch[] = [emptyBranch()];
+  readonly #layers: OpenBranch[] = [emptyBranch()];
   readonly #ordinary = new Set<NetId>();
+  readonly #constants: Entry[] = [];
+  /** Variables assigned a number, outside of any branch; they go before `#layers`. */
+  readonly #words = new KnownWords();
   #nextLocal = -1;
 
   constructor(logic: Logic, options: StoreOptions = {}) {
@@ -61,13 +82,16 @@ export class Store {
 
   /** Forgets everything, for another expression. */
   clear(): void {
+    this.#words.clear();
     this.#layers.length = 1;
-    this.#top.now.clear();
-    this.#top.later.clear();
-    this.reads.clear();
-    this.places.clear();
-    this.loopIndexes.clear();
-    this.#ordinary.clear();
+    if (this.#top.now.size > 0) this.#top.now.clear();
+    if (this.#top.later.size > 0) this.#top.later.clear();
+    this.#top.nowWords = noWords;
+    this.#top.laterWords = noWords;
+    // Clearing costs something even where there is nothing, which is nearly always so.
+    for (const set of [this.reads, this.places, this.loopIndexes, this.#ordinary]) {
+      if (set.size > 0) set.clear();
+    }
     this.aborted = false;
   }
 
@@ -78,6 +102,7 @@ export class Store {
 
   /** Drops the values of all locals made since `first` was the next, when their call has ended. */
   forgetFrom(first: NetId): void {
+    for (const word of this.#words.all()) if (word.keys[0]! <= first) this.#words.delete(word);
     const { now, later } = this.#top;
     for (let key = first as number; key > this.#nextLocal; key--) {
       now.delete(netId(key));
@@ -109,19 +134,100 @@ export class Store {
     return this.logic.mux(entry.assigned, this.own(key), entry.value);
   }
 
+  /** The value of a variable that was assigned a number; undefined where only its bits tell. */
+  known(keys: readonly NetId[]): bigint | undefined {
+    return this.#words.get(keys)?.value;
+  }
+
+  /**
+   * Assigns a number below 2^width to a whole variable; false where that has to be done bit by
+   * bit.
+   */
+  writeKnown(keys: readonly NetId[], value: bigint, write: WriteMode): boolean {
+    if (!write.blocking || !this.isUnconditional) return false;
+    const word = this.#words.get(keys);
+    const isOrdinary = !write.isLoopIndex;
+    if (word !== undefined) {
+      word.value = value;
+      word.isOrdinary ||= isOrdinary;
+      return true;
+    }
+    for (const key of keys) {
+      this.#spread(key);
+      if (key >= 0) this.places.set(key, write.place);
+    }
+    this.#words.add({ keys, value, isOrdinary });
+    return true;
+  }
+
+  /** Lets the word that a bit belongs to, if any, be known by its bits. */
+  #spread(key: NetId): void {
+    const word = this.#words.isEmpty ? undefined : this.#words.ofBit(key);
+    if (word === undefined) return;
+    this.#words.delete(word);
+    const { now } = this.#layers[0]!;
+    for (const [i, bit] of word.keys.entries()) {
+      now.set(bit, this.#entry(this.logic.constant((word.value >> BigInt(i)) & 1n ? 1 : 0)));
+      if (bit < 0) continue;
+      const place = this.places.get(bit)!;
+      this.#note(bit, { blocking: true, place, isLoopIndex: !word.isOrdinary });
+    }
+  }
+
   /** Assigns a bit where `when` is 1. */
   write(key: NetId, value: NetId, when: NetId, write: WriteMode): void {
+    this.#spread(key);
+    if (key >= 0) this.#note(key, write);
+    const kind = write.blocking ? 'now' : 'later';
+    const entry = this.#entry(value);
+    const isSure = when === this.logic.one;
+    const result = isSure ? entry : this.#choose(key, when, entry, this.#find(key, kind));
+    this.#top[kind].set(key, result);
+  }
+
+  // What tells of a routine's locals ends with the call, so that nobody asks where they are assigned.
+  #note(key: NetId, write: WriteMode): void {
     this.places.set(key, write.place);
     if (write.isLoopIndex && !this.#ordinary.has(key)) this.loopIndexes.add(key);
     else {
       this.#ordinary.add(key);
       this.loopIndexes.delete(key);
     }
-    const kind = write.blocking ? 'now' : 'later';
-    const { one } = this.logic;
-    const entry = { value, assigned: one };
-    const result = when === one ? entry : this.#choose(key, when, entry, this.#find(key, kind));
-    this.#top[kind].set(key, result);
+  }
+
+  /** The entry of an assignment that is surely made: the same one for the same constant. */
+  #entry(value: NetId): Entry {
+    const { logic } = this;
+    const assigned = logic.one;
+    const constant = value === assigned ? 1 : value === logic.zero ? 0 : -1;
+    if (constant < 0) return { value, assigned };
+    this.#constants[constant] ??= { value, assigned };
+    return this.#constants[constant];
+  }
+
+  /** Writes a word of a held memory. */
+  writeWord(write: WordWrite, blocking: boolean): void {
+    const kind = blocking ? 'nowWords' : 'laterWords';
+    const top = this.#top;
+    // The list of an open branch is its own: it grows in place.
+    if (top[kind] === noWords) top[kind] = [write];
+    else (top[kind] as WordWrite[]).push(write);
+  }
+
+  /** The blocking writes to a held memory so far. */
+  wordsWritten(memory: HeldMemory): readonly WordWrite[] {
+    const own = this.#layers.flatMap(({ nowWords }) => nowWords);
+    return own.filter((write) => write.memory === memory);
+  }
+
+  /** All writes of the process to held memories, non-blocking ones behind blocking ones. */
+  finishWords(): readonly WordWrite[] {
+    return [...this.#top.nowWords, ...this.#top.laterWords];
+  }
+
+  /** Whether what is executed now happens whatever the conditions are. */
+  get isUnconditional(): boolean {
+    return this.#layers.length === 1;
   }
 
   /** Starts a branch. */
@@ -138,30 +244,46 @@ export class Store {
   apply(branch: Branch): void {
     for (const [key, entry] of branch.now) this.#top.now.set(key, entry);
     for (const [key, entry] of branch.later) this.#top.later.set(key, entry);
+    for (const write of branch.nowWords) this.writeWord(write, true);
+    for (const write of branch.laterWords) this.writeWord(write, false);
   }
 
   /** One branch out of two: the first where `condition` is 1. Undefined stands for an empty one. */
   merge(condition: NetId, whenTrue: Branch | undefined, whenFalse: Branch | undefined): Branch {
-    return this.#combined([whenTrue, whenFalse], (key, [one, zero]) =>
+    const either = (kind: 'nowWords' | 'laterWords'): readonly WordWrite[] =>
+      eitherWrites(
+        condition,
+        whenTrue?.[kind] ?? noWords,
+        whenFalse?.[kind] ?? noWords,
+        this.logic,
+      );
+    const changes = this.#combined([whenTrue, whenFalse], (key, [one, zero]) =>
       this.#choose(key, condition, one, zero),
     );
+    return { ...changes, nowWords: either('nowWords'), laterWords: either('laterWords') };
   }
 
   /** One branch out of a table: entry i where `select` has the value i. */
   mergeTable(select: Bits, table: readonly (Branch | undefined)[]): Branch {
     const branches = [...new Set(table)];
     const index = table.map((branch) => branches.indexOf(branch));
-    return this.#combined(branches, (_, entries) => {
+    const words = (kind: 'nowWords' | 'laterWords'): readonly WordWrite[] => {
+      const all = branches.map((branch) => branch?.[kind] ?? noWords);
+      return tableWrites(select, index, all, this.logic);
+    };
+    const changes = this.#combined(branches, (_, entries) => {
       const picked = index.map((i) => entries[i]);
       return {
         value: selectFrom(select, (i) => picked[i]?.value, this.logic)!,
         assigned: selectFrom(select, (i) => picked[i]?.assigned ?? this.logic.zero, this.logic)!,
       };
     });
+    return { ...changes, nowWords: words('nowWords'), laterWords: words('laterWords') };
   }
 
   /** All assignments of the process, non-blocking ones over blocking ones of the same bit. */
   finish(): Changes {
+    for (const { keys } of this.#words.all()) this.#spread(keys[0]!);
     const { now, later } = this.#top;
     const changes = new Map(now);
     for (const [key, entry] of later) {
@@ -171,11 +293,12 @@ export class Store {
     return changes;
   }
 
-  get #top(): Branch {
+  get #top(): OpenBranch {
     return this.#layers[this.#layers.length - 1]!;
   }
 
-  #find(key: NetId, kind: keyof Branch): Entry | undefined {
+  #find(key: NetId, kind: 'now' | 'later'): Entry | undefined {
+    if (kind === 'now') this.#spread(key);
     for (let i = this.#layers.length - 1; i >= 0; i--) {
       const entry = this.#layers[i]![kind].get(key);
       if (entry !== undefined) return entry;
@@ -186,8 +309,8 @@ export class Store {
   #combined(
     branches: readonly (Branch | undefined)[],
     combine: (key: NetId, entries: readonly (Entry | undefined)[]) => Entry,
-  ): Branch {
-    const result = emptyBranch();
+  ): Pick<Branch, 'now' | 'later'> {
+    const result = { now: new Map(), later: new Map() };
     for (const kind of ['now', 'later'] as const) {
       const keys = new Set(branches.flatMap((branch) => [...(branch?.[kind].keys() ?? [])]));
       for (const key of keys) {

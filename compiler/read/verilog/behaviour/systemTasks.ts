@@ -1,6 +1,7 @@
 import type { Statement } from '../syntax.js';
 import type { Context } from './context.js';
 import { refuse } from './names.js';
+import { readMemoryFile } from './readMemoryFile.js';
 import { report } from './report.js';
 
 // Clause 17: what prints, writes waveforms or steers a simulation.
@@ -17,8 +18,7 @@ export function executeSystemTask(
   if (ignored.test(name)) {
     report(shared, 'task-ignored', statement, `\`${name}\` has no part in a circuit; left out`);
   } else if (name === '$readmemh' || name === '$readmemb') {
-    const message = `\`${name}\` is not supported; assign the words in an initial block`;
-    refuse(context, statement, message);
+    readMemoryFile(statement, name === '$readmemh' ? 16 : 2, context);
   } else {
     refuse(context, statement, `\`${name}\` has no meaning in a circuit; leave it out`);
   }

@@ -1,19 +1,23 @@
-import type { NetId } from '../../../circuit/ids.js';
+import { type NetId, netId } from '../../../circuit/ids.js';
 import type { MemoryBinding, SignalBinding } from '../scope.js';
 import type { Expression, NameExpression, PartExpression, SelectExpression } from '../syntax.js';
 import type { Context } from './context.js';
+import { type HeldPlace, heldPlace } from './heldMemory.js';
+import { type IndexValue, indexValue, warnOutside } from './indexValue.js';
+import {
+  constantWord,
+  indexValues,
+  isNear,
+  reportIndices,
+  type WordSelect,
+  withinMemoryLimit,
+  wordSelectOf,
+  wordsMeant,
+  wordWidth,
+} from './memorySelect.js';
 import { bindingOf, meaningOf } from './names.js';
 import { pathText, report } from './report.js';
-import {
-  type IndexValue,
-  indexValue,
-  isAccessible,
-  movingRange,
-  partOf,
-  positionOf,
-  warnOutside,
-  withinMemoryLimit,
-} from './selects.js';
+import { isAccessible, movingRange, partOf, positionOf } from './selects.js';
 import { indexIs, indexOf } from './window.js';
 
 /**
@@ -21,8 +25,11 @@ import { indexIs, indexOf } from './window.js';
  * which it is this one. A bit that is outside of the declaration is undefined.
  */
 export interface Place {
+  /** Nets; or, in a word of a held memory, places in it from the right. */
   readonly bits: readonly (NetId | undefined)[];
   readonly when: NetId;
+  /** The word that all places of a piece are in, where it is one of a held memory. */
+  readonly word?: HeldPlace;
 }
 
 /** A stretch of a target: places of one width that exclude each other. */
@@ -174,6 +181,7 @@ function baseRegion(
     const binding = meaningOf(base, context);
     if (binding?.kind !== 'signal' || binding.isVector) return regionOf(base, kind, context);
   }
+  if (reportIndices(base, context)) return undefined;
   let name = base;
   while (name.kind === 'select') name = name.base;
   const text = pathText(context.scope.shared, name.path);
@@ -188,36 +196,38 @@ function wordRegion(
   kind: TargetKind,
   context: Context,
 ): { region: Region | undefined } | undefined {
-  const { base } = expression;
-  if (base.kind !== 'name') return undefined;
-  const memory = bindingOf(base, context);
-  if (memory?.kind !== 'memory') return undefined;
-  if (!isOfKind(memory, kind, base, expression, context)) return { region: undefined };
-  if (!mayAssign(base, memory, context)) return { region: undefined };
-  const places = wordPlaces(memory, expression, context);
+  const select = wordSelectOf(expression, context);
+  if (select === undefined) return undefined;
+  const { memory, name } = select;
+  if (!isOfKind(memory, kind, name, expression, context)) return { region: undefined };
+  if (!mayAssign(name, memory, context)) return { region: undefined };
+  const places = wordPlaces(select, context);
   const { msb, lsb } = memory;
-  return { region: places && { width: Math.abs(msb - lsb) + 1, msb, lsb, places } };
+  return { region: places && { width: wordWidth(memory), msb, lsb, places } };
 }
 
-function wordPlaces(
-  memory: MemoryBinding,
-  expression: SelectExpression,
-  context: Context,
-): readonly Place[] | undefined {
+function wordPlaces(select: WordSelect, context: Context): readonly Place[] | undefined {
   const { logic } = context;
-  const { low, high, words } = memory;
-  const index = indexValue(expression.index, context);
-  if (index.kind === 'unknown') return [];
-  if (index.kind === 'constant') {
-    const bits = words[index.value - low];
-    if (bits !== undefined) return [{ bits, when: logic.one }];
-    warnOutside(expression, low, high, context);
-    const width = Math.abs(memory.msb - memory.lsb) + 1;
-    return [{ bits: new Array<undefined>(width).fill(undefined), when: logic.one }];
+  const { memory } = select;
+  if (!isNear(select, context)) return undefined;
+  const values = indexValues(select, context);
+  // Nothing is written where an index is x or there is no such word.
+  if (values === 'unknown') return [];
+  if (values === 'outside') {
+    const bits = new Array<undefined>(wordWidth(memory)).fill(undefined);
+    return [{ bits, when: logic.one }];
   }
-  if (!withinMemoryLimit(memory, expression, context)) return undefined;
-  const address = indexOf(index.bits, index.signed, low, high, logic);
-  return words.map((bits, i) => ({ bits, when: indexIs(address, low + i, logic) }));
+  if (memory.held !== undefined) {
+    const word = heldPlace(memory, memory.held, values, context);
+    const bits = Array.from({ length: wordWidth(memory) }, (_, bit) => netId(bit));
+    return [{ bits, when: logic.not(word.beyond), word }];
+  }
+  const isConstant = constantWord(memory, values) !== undefined;
+  if (!isConstant && !withinMemoryLimit(select, context)) return undefined;
+  return wordsMeant(memory, values, logic).map(({ word, when }) => ({
+    bits: memory.words[word]!,
+    when,
+  }));
 }
 
 function partOfRegion(
@@ -244,13 +254,13 @@ function partOfRegion(
     const chosen = indexIs(address, i, logic);
     if (logic.valueOf(chosen) === 0) continue;
     for (const place of region.places) {
-      const { bits } = cut(place, positionOf(region, i) + offset, width);
-      places.push({ bits, when: logic.and(place.when, chosen) });
+      const part = cut(place, positionOf(region, i) + offset, width);
+      places.push({ ...part, when: logic.and(place.when, chosen) });
     }
   }
   return { width, places };
 }
 
-function cut({ bits, when }: Place, start: number, width: number): Place {
-  return { bits: Array.from({ length: width }, (_, i) => bits[start + i]), when };
+function cut(place: Place, start: number, width: number): Place {
+  return { ...place, bits: Array.from({ length: width }, (_, i) => place.bits[start + i]) };
 }

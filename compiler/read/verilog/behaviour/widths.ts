@@ -1,5 +1,11 @@
 import type { Constant } from '../scope.js';
-import type { BinaryOperator, Expression, PartExpression, RoutineItem } from '../syntax.js';
+import type {
+  BinaryOperator,
+  Expression,
+  PartExpression,
+  RoutineItem,
+  UnaryOperator,
+} from '../syntax.js';
 import { type Known, knownOf, signedValue } from './bits.js';
 import type { Context } from './context.js';
 import { resolveCalled } from './localScope.js';
@@ -14,6 +20,11 @@ export interface Shape {
 
 /** The widest value: as wide as any implementation must allow (clause 3.5.1). */
 export const MAX_WIDTH = 65536;
+
+const STEPS_OF_CONSTANT = 4;
+
+/** The widest concatenation, which is as wide as vectors are declared at most. */
+const MAX_VECTOR = 1 << 20;
 
 /**
  * What an operator makes of the width and sign of its operands (IEEE 1364-2005, table 5-22):
@@ -66,7 +77,13 @@ export function shapeOf(expression: Expression, context: Context): Shape {
     let part: Expression | undefined;
     if (node.kind === 'binary' && operatorRule[node.operator] === 'context') part = node.right;
     else if (node.kind === 'conditional') part = node.whenTrue;
-    if (part === undefined) break;
+    if (part === undefined) {
+      // These have the width and sign of an operand.
+      if (node.kind === 'binary' && operatorRule[node.operator] === 'shift') node = node.left;
+      else if (node.kind === 'unary' && takesContext(node.operator)) node = node.operand;
+      else break;
+      continue;
+    }
     const shape = shapeOf(part, context);
     joined = joined === undefined ? shape : join(joined, shape);
     node = node.kind === 'binary' ? node.left : node.kind === 'conditional' ? node.whenFalse : node;
@@ -75,30 +92,36 @@ export function shapeOf(expression: Expression, context: Context): Shape {
   return joined === undefined ? rest : join(joined, rest);
 }
 
+const takesContext = (operator: UnaryOperator): boolean =>
+  operator === '+' || operator === '-' || operator === '~';
+
+/** Eight bits for each byte (clause 3.6). */
+function stringWidth(node: Extract<Expression, { kind: 'string' }>, context: Context): number {
+  const bytes = Math.max(1, new TextEncoder().encode(node.text).length);
+  return withinLimit(bytes * 8, node, context);
+}
+
 function shapeOfOther(node: Expression, context: Context): Shape {
   switch (node.kind) {
     case 'number':
       return { width: node.width ?? unsizedWidth(node), signed: node.signed };
     case 'string':
-      return { width: Math.max(1, new TextEncoder().encode(node.text).length) * 8, signed: false };
+      return { width: stringWidth(node, context), signed: false };
     case 'name':
     case 'select':
       return shapeOfName(node, context);
     case 'part':
       return { width: partWidth(node, context), signed: false };
     case 'concat':
-      return { width: concatWidth(node.parts, context), signed: false };
+      return {
+        width: withinLimit(concatWidth(node.parts, context), node, context, MAX_VECTOR),
+        signed: false,
+      };
     case 'replicate':
       return { width: replicateWidth(node, context), signed: false };
-    case 'unary':
-      return ['+', '-', '~'].includes(node.operator) ? shapeOf(node.operand, context) : oneBit;
-    case 'binary':
-      return operatorRule[node.operator] === 'shift' ? shapeOf(node.left, context) : oneBit;
     case 'call':
       return shapeOfCall(node, context);
-    case 'conditional':
-      return shapeOf(node, context);
-    case 'real':
+    default:
       return oneBit;
   }
 }
@@ -117,7 +140,7 @@ function shapeOfName(
   let name = node;
   for (; name.kind === 'select'; name = name.base) depth++;
   const binding = meaningOf(name, context);
-  if (binding?.kind === 'memory' && depth === 1) {
+  if (binding?.kind === 'memory' && depth === binding.indices.length) {
     return { width: Math.abs(binding.msb - binding.lsb) + 1, signed: binding.signed };
   }
   if (depth > 0) return oneBit;
@@ -185,8 +208,11 @@ export function constantIn(expression: Expression, context: Context): Constant |
   const known = quickValue(expression, context);
   if (known !== undefined) return known;
   const { shared } = context.scope;
+  shared.budget.spend(STEPS_OF_CONSTANT);
   const errors = errorsMet(shared);
   const { width, signed } = shapeOf(expression, context);
+  const folded = context.services.fold(expression, context, width, signed);
+  if (folded !== undefined) return { width, signed, value: folded, unknown: 0n };
   const bits = context.services.lower(expression, context, width, signed);
   const value: Known | undefined = knownOf(bits, context.logic);
   if (value !== undefined) {
@@ -249,13 +275,18 @@ export function countOf(
   return undefined;
 }
 
-function withinLimit(width: number, place: Placed, context: Context): number {
-  if (width <= MAX_WIDTH) return width;
+function withinLimit(
+  width: number,
+  place: Placed,
+  context: Context,
+  limit: number = MAX_WIDTH,
+): number {
+  if (width <= limit) return width;
   report(
     context.scope.shared,
     'range-invalid',
     place,
-    `${width} bits are more than a value may have (${MAX_WIDTH}); split it`,
+    `${width} bits are more than a value may have (${limit}); split it`,
   );
   return 1;
 }

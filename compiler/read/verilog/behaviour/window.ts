@@ -27,7 +27,7 @@ export function indexOf(
   const cut = bits.slice(0, needed);
   const rest = bits.slice(needed);
   const sign = signed ? cut[needed - 1]! : logic.zero;
-  const beyond = logic.or(...rest.map((net) => logic.xor(net, sign)));
+  const beyond = logic.any(rest.map((net) => logic.xor(net, sign)));
   return { bits: cut, signed, beyond, low, high };
 }
 

@@ -1,4 +1,4 @@
-import type { BlockScope } from './blockScope.js';
+import { type BlockScope, wordsOf } from './blockScope.js';
 import type { ModuleBody } from './body.js';
 import { SignalTable } from './signalTable.js';
 import { Flag, SymbolKind } from './symbols.js';
@@ -16,7 +16,6 @@ export function blockNamesOf(body: ModuleBody, find: (net: number) => number): B
       parent: block.parent?.index ?? 0,
       names: { name, signals, bits: nets.length },
       nets,
-      scratch: new Uint32Array(nets.length),
     };
   });
 }
@@ -46,12 +45,9 @@ class NameCollector {
   }
 
   #addWords(symbol: number): void {
-    const { symbols, memories } = this.#block;
-    const { first, low, high } = memories[symbols.value(symbol)]!;
-    const name = this.#body.text(symbols.name(symbol));
-    const width = symbols.width(symbol);
-    for (let address = low; address <= high; address++) {
-      this.#add(symbol, first + (address - low) * width, `${name}[${address}]`);
+    const name = this.#body.text(this.#block.symbols.name(symbol));
+    for (const { first, index } of this.#block.vectors(symbol)) {
+      this.#add(symbol, first, `${name}${index}`);
     }
   }
 
@@ -76,8 +72,8 @@ function bitsOf({ symbols, memories }: BlockScope): number {
     const kind = symbols.kind(symbol);
     if (kind === SymbolKind.Signal) bits += symbols.width(symbol);
     if (kind !== SymbolKind.Memory) continue;
-    const { low, high } = memories[symbols.value(symbol)]!;
-    bits += (high - low + 1) * symbols.width(symbol);
+    const { indices, held } = memories[symbols.value(symbol)]!;
+    if (held === undefined) bits += wordsOf(indices) * symbols.width(symbol);
   }
   return bits;
 }

@@ -6,6 +6,8 @@ import type {
   Binding,
   Constant,
   Elaboration,
+  HeldMemory,
+  IndexRange,
   MemoryBinding,
   ParameterBinding,
   Scope,
@@ -36,11 +38,23 @@ export interface ScopeHost extends Elaboration {
 }
 
 /** An array of words among the names of a scope. */
-export interface MemoryShape {
-  /** First net of the word at `low`; the words follow one another. */
+export interface ArrayShape {
+  /** First net of the first word; the words follow one another. None where they are held. */
   readonly first: NetId;
-  readonly low: number;
-  readonly high: number;
+  readonly indices: readonly IndexRange[];
+  /** What holds the words where they have no nets. */
+  readonly held?: HeldMemory;
+}
+
+/** The indices of each word of an array as they follow its name, `[3][0]`, in order. */
+function* indexTexts([range, ...others]: readonly IndexRange[]): Iterable<string> {
+  if (range === undefined) {
+    yield '';
+    return;
+  }
+  for (let at = range.low; at <= range.high; at++) {
+    for (const rest of indexTexts(others)) yield `[${at}]${rest}`;
+  }
 }
 
 /** A module, or a generate block or named block of statements inside one, and its names. */
@@ -51,11 +65,12 @@ export class BlockScope implements Scope {
   readonly index: number;
   readonly name: NameId;
   readonly symbols = new SymbolTable();
-  readonly constants: Constant[] = [];
-  readonly routines: RoutineItem[] = [];
-  readonly memories: MemoryShape[] = [];
   /** Items whose names are being declared, for messages about those that are still unknown. */
   pending: readonly Item[] = noItems;
+  // A generate loop makes a hundred thousand scopes with next to nothing in them.
+  #constants: Constant[] | undefined;
+  #routines: RoutineItem[] | undefined;
+  #memories: ArrayShape[] | undefined;
   // Only what is worth keeping: most signals are narrow, and a netlist has a million of them.
   #bindings: Map<number, Binding> | undefined;
 
@@ -64,6 +79,21 @@ export class BlockScope implements Scope {
     this.parent = parent;
     this.index = index;
     this.name = name;
+  }
+
+  get constants(): Constant[] {
+    this.#constants ??= [];
+    return this.#constants;
+  }
+
+  get routines(): RoutineItem[] {
+    this.#routines ??= [];
+    return this.#routines;
+  }
+
+  get memories(): ArrayShape[] {
+    this.#memories ??= [];
+    return this.#memories;
   }
 
   /** The innermost scope, from this one outwards, that has a name; undefined if none has. */
@@ -88,6 +118,13 @@ export class BlockScope implements Scope {
     const symbol = this.symbols.find(name);
     if (symbol < 0 || this.symbols.kind(symbol) !== SymbolKind.Block) return undefined;
     return this.shared.blocks[this.symbols.value(symbol)];
+  }
+
+  *visibleNames(): Iterable<string> {
+    for (let scope: BlockScope | undefined = this; scope; scope = scope.parent) {
+      const { symbols } = scope;
+      for (let i = 0; i < symbols.count; i++) yield this.shared.names.text(symbols.name(i));
+    }
   }
 
   unusable(name: NameId): Unusable | undefined {
@@ -121,10 +158,13 @@ export class BlockScope implements Scope {
     const value = symbols.value(symbol);
     if (kind === SymbolKind.Signal) yield { first: value, index: '' };
     if (kind !== SymbolKind.Memory) return;
-    const { first, low, high } = this.memories[value]!;
+    const { first, indices, held } = this.memories[value]!;
+    if (held !== undefined) return;
     const width = symbols.width(symbol);
-    for (let at = low; at <= high; at++) {
-      yield { first: first + (at - low) * width, index: `[${at}]` };
+    let word = first as number;
+    for (const index of indexTexts(indices)) {
+      yield { first: word, index };
+      word += width;
     }
   }
 
@@ -181,9 +221,9 @@ export class BlockScope implements Scope {
     const { symbols } = this;
     const flags = symbols.flags(symbol);
     const width = symbols.width(symbol);
-    const { first, low, high } = this.memories[symbols.value(symbol)]!;
+    const { first, indices, held } = this.memories[symbols.value(symbol)]!;
     const words: NetId[][] = [];
-    for (let word = 0; word <= high - low; word++) {
+    for (let word = 0; held === undefined && word < wordsOf(indices); word++) {
       words.push(consecutive(first + word * width, width));
     }
     return {
@@ -193,12 +233,16 @@ export class BlockScope implements Scope {
       lsb: symbols.lsb(symbol),
       signed: (flags & Flag.Signed) !== 0,
       isVariable: (flags & Flag.Variable) !== 0,
-      low,
-      high,
+      indices,
       words,
+      ...(held !== undefined && { held }),
     };
   }
 }
+
+/** Number of words that indices tell apart. */
+export const wordsOf = (indices: readonly IndexRange[]): number =>
+  indices.reduce((product, { low, high }) => product * (high - low + 1), 1);
 
 function consecutive(first: number, count: number): NetId[] {
   const nets: NetId[] = [];

@@ -1,16 +1,21 @@
 import { GrowableUint32 } from '../../../circuit/growable.js';
 import type { NetId } from '../../../circuit/ids.js';
+import { depthOf } from '../../../circuit/memory.js';
 import type { DiagnosticCode } from '../../../diagnostics/codes.js';
 import type { Diagnostic, Diagnostics } from '../../../diagnostics/diagnostics.js';
+import type { Source } from '../../../diagnostics/source.js';
 import type { Position, SourceMap } from '../../../diagnostics/sourceMap.js';
 import type { NameId, NameTable } from '../../names.js';
-import type { Binding } from '../scope.js';
+import { REGISTER_LIMIT } from '../behaviour/memorySelect.js';
+import { type Budget, tooLarge } from '../budget.js';
+import type { Binding, HeldMemory } from '../scope.js';
 import type { Expression, Item, ModuleSyntax, Strength } from '../syntax.js';
 import { BlockScope } from './blockScope.js';
 import { Children } from './children.js';
 import type { Design } from './design.js';
 import { imported } from './imports.js';
 import { wordSpan } from './messages.js';
+import { NeedsRegisters } from './needsRegisters.js';
 import { bindingAbove, type Outer, type OuterHost } from './outer.js';
 import { Recording } from './recording.js';
 import { SymbolKind, type SymbolTable } from './symbols.js';
@@ -38,6 +43,9 @@ export interface OpenInput {
   readonly instance: number;
 }
 
+// What a scope and its tables take, in numbers of 32 bits.
+const NUMBERS_OF_BLOCK = 350;
+
 /** Value in `ModuleBody.placed` of an instance that could not be placed. */
 export const NOT_PLACED = 0xffffffff;
 
@@ -49,8 +57,8 @@ export class ModuleBody implements OuterHost {
   readonly design: Design;
   readonly module: ModuleSyntax;
   readonly outer: Outer | undefined;
-  readonly builder = new Recording();
-  readonly children = new Children();
+  readonly builder: Recording;
+  readonly children: Children;
   readonly initialValues = new Map<NetId, 0 | 1>();
   readonly blocks: BlockScope[] = [];
 
@@ -86,10 +94,23 @@ export class ModuleBody implements OuterHost {
   readonly outerNets = new Map<NetId, NetId>();
   dependsOnPlace = false;
 
-  constructor(design: Design, module: ModuleSyntax, outer: Outer | undefined) {
+  /** Where the array of each memory of the recording is declared. */
+  readonly arrayPositions: Position[] = [];
+  /** Positions of the arrays that are to be built from registers, whatever their size. */
+  readonly inRegisters: ReadonlySet<Position>;
+
+  constructor(
+    design: Design,
+    module: ModuleSyntax,
+    outer: Outer | undefined,
+    inRegisters: ReadonlySet<Position> = new Set(),
+  ) {
+    this.inRegisters = inRegisters;
     this.design = design;
     this.module = module;
     this.outer = outer;
+    this.builder = new Recording(design.budget);
+    this.children = new Children(design.budget);
     this.blocks.push(new BlockScope(this, undefined, 0, module.name));
   }
 
@@ -103,6 +124,10 @@ export class ModuleBody implements OuterHost {
 
   get diagnostics(): Diagnostics {
     return this.design.diagnostics;
+  }
+
+  get budget(): Budget {
+    return this.design.budget;
   }
 
   get moduleName(): NameId {
@@ -119,6 +144,16 @@ export class ModuleBody implements OuterHost {
     for (const [index, list] of this.#work.entries()) list.length = lengths[index]!;
   }
 
+  readData(path: string, from: Position): Source | undefined {
+    const { source } = this.sources.span(from);
+    return this.design.readInclude?.(path, source);
+  }
+
+  needRegisters(memory: HeldMemory): void {
+    const { width, indices } = this.builder.memories[memory.number]!;
+    if (depthOf(indices) * width <= REGISTER_LIMIT) throw new NeedsRegisters(memory.position);
+  }
+
   /** The scope of the module itself. */
   get root(): BlockScope {
     return this.blocks[0]!;
@@ -133,6 +168,7 @@ export class ModuleBody implements OuterHost {
 
   /** Enters a block that was made for the next index into the scope around it. */
   enterBlock(block: BlockScope, start: Position, end: Position): void {
+    if (!this.budget.grow(NUMBERS_OF_BLOCK)) throw tooLarge({ start, end });
     const { name, index, parent } = block;
     this.blocks.push(block);
     parent?.symbols.add({ name, kind: SymbolKind.Block, value: index, start, end });

@@ -58,7 +58,7 @@ export function boxTemplate(
     drives: Uint8Array.from(drives),
     reads: Uint8Array.from(reads),
     repeats: [],
-    blocks: [{ name, parent: 0, names, nets: boundary, scratch: new Uint32Array(bits) }],
+    blocks: [{ name, parent: 0, names, nets: boundary }],
     scope: undefined,
     driveOf: (net) => drives[net] ?? Drive.None,
     readsNet: (net) => reads[net] === 1,

@@ -1,6 +1,7 @@
 import { GrowableUint32 } from '../../../circuit/growable.js';
 import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
 import type { NameId } from '../../names.js';
+import { type Budget, tooLarge } from '../budget.js';
 import type { Origin } from './recording.js';
 
 /** A net of a child that is no port, and the net of the parent that it is one with. */
@@ -9,6 +10,9 @@ export interface Import {
   readonly net: NetId;
 }
 
+// What an instance takes in the columns below, its ports aside.
+const NUMBERS_OF_CHILD = 6;
+
 const noImports: readonly Import[] = [];
 
 /**
@@ -16,6 +20,7 @@ const noImports: readonly Import[] = [];
  * net for each net of the template's boundary (`NO_NET` where unconnected).
  */
 export class Children {
+  readonly #budget: Budget | undefined;
   readonly #template = new GrowableUint32(2);
   readonly #name = new GrowableUint32(2);
   readonly #block = new GrowableUint32(2);
@@ -26,6 +31,11 @@ export class Children {
   readonly #imports = new Map<number, Import[]>();
   readonly #reached = new Map<NetId, { readonly child: number; readonly childNet: NetId }>();
 
+  /** `budget` keeps the list from becoming too long, where that is not sure anyway. */
+  constructor(budget?: Budget) {
+    this.#budget = budget;
+  }
+
   get count(): number {
     return this.#template.length;
   }
@@ -35,6 +45,7 @@ export class Children {
    * is 0 where it shall make no scope.
    */
   add(template: number, name: NameId, block: number, origin: Origin, width: number): number {
+    if (this.#budget?.grow(NUMBERS_OF_CHILD + width) === false) throw tooLarge(origin);
     this.#template.push(template);
     this.#name.push(name);
     this.#block.push(block);

@@ -24,9 +24,9 @@ export function compileBox(
   const name = design.text(definition.name);
   if ('template' in definition) {
     // What is wrong with the cell does not matter.
-    const { names, sources } = design;
+    const { names, sources, budget } = design;
     const { ports } = definition.template(
-      { names, sources, diagnostics: new Diagnostics() },
+      { names, sources, budget, diagnostics: new Diagnostics() },
       place,
     );
     return boxTemplate(name, boxPorts(design, ports), false);

@@ -1,9 +1,12 @@
+import type { Position } from '../../../diagnostics/sourceMap.js';
 import type { ModuleSyntax } from '../syntax.js';
 import { declareTargets, lowerAssigns, lowerProcesses } from './assigns.js';
 import { ModuleBody } from './body.js';
 import { complete } from './complete.js';
 import { connectInstances } from './connecting.js';
+import { refuseDelayLines } from './delayLines.js';
 import type { Design } from './design.js';
+import { NeedsRegisters } from './needsRegisters.js';
 import type { Outer } from './outer.js';
 import type { Overrides } from './overrides.js';
 import { nameInstances, placeInstances } from './placing.js';
@@ -11,14 +14,30 @@ import { bindPorts } from './ports.js';
 import { declareModule } from './scopes.js';
 import type { Template } from './template.js';
 
-/** Compiles a module for one set of parameter values, and the modules it instantiates before. */
+/**
+ * Compiles a module for one set of parameter values, and the modules it instantiates before.
+ *
+ * Large arrays are held as memories. One that turns out to be used as only registers can be is
+ * built from these when the module is compiled once more.
+ */
 export function compileModule(
   design: Design,
   module: ModuleSyntax,
   overrides: Overrides,
   outer: Outer | undefined,
 ): Template {
-  const body = new ModuleBody(design, module, outer);
+  const inRegisters = new Set<Position>();
+  for (;;) {
+    try {
+      return compileWith(new ModuleBody(design, module, outer, inRegisters), overrides);
+    } catch (error) {
+      if (!(error instanceof NeedsRegisters) || inRegisters.has(error.position)) throw error;
+      inRegisters.add(error.position);
+    }
+  }
+}
+
+function compileWith(body: ModuleBody, overrides: Overrides): Template {
   declareModule(body, overrides);
   nameInstances(body);
   const boundary = bindPorts(body);
@@ -27,5 +46,6 @@ export function compileModule(
   connectInstances(body);
   lowerAssigns(body);
   lowerProcesses(body);
+  refuseDelayLines(body);
   return complete(body, boundary);
 }

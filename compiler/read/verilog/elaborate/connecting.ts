@@ -1,6 +1,8 @@
 import { GateKind } from '../../../circuit/gates.js';
 import { type NetId, NO_NET } from '../../../circuit/ids.js';
 import type { Position } from '../../../diagnostics/sourceMap.js';
+import { listed } from '../../listed.js';
+import { hintOf } from '../../nearest.js';
 import { ConnectionKind, POSITIONAL } from '../instances.js';
 import type { BlockScope } from './blockScope.js';
 import { type ModuleBody, NOT_PLACED } from './body.js';
@@ -10,6 +12,7 @@ import { Flag } from './symbols.js';
 import type { Template, TemplatePort } from './template.js';
 import { connectionExpression, drivenNets, NOT_SIMPLE, readNets, simpleNet } from './terminals.js';
 import { connectUnknownBox } from './unknownBoxes.js';
+import { wordBefore } from './wordNear.js';
 
 /** Connects every instance, and builds the built-in gates (IEEE 1364-2005, clause 12.3). */
 export function connectInstances(body: ModuleBody): void {
@@ -105,10 +108,11 @@ function portPlace(
   if (ports[position]?.name === name) return position;
   const place = portOfName.get(name);
   if (place !== undefined) return place;
-  const { start, end } = body.wordAt(table.connectionPosition(connection));
+  const { start, end } = wordBefore(body, name, table.connectionPosition(connection));
   const known = ports.flatMap((port) => (port.name === 0 ? [] : [body.text(port.name)]));
-  const list = known.length === 0 ? 'it has none' : `it has ${known.join(', ')}`;
-  const message = `${template.name} has no port ${body.text(name)}; ${list}`;
+  const list = known.length === 0 ? 'it has none' : `it has ${listed(known)}`;
+  const text = body.text(name);
+  const message = `${template.name} has no port ${text}; ${list}${hintOf(text, known)}`;
   body.report('port-unknown', message, start, end);
   return -1;
 }
@@ -128,10 +132,11 @@ function reportTwice(
   place: number,
 ): void {
   const table = body.module.instances;
-  const { start, end } = body.wordAt(table.connectionPosition(connection));
+  const own = table.connectionPort(connection);
+  const at = table.connectionPosition(connection);
+  const { start, end } = own === POSITIONAL ? body.wordAt(at) : wordBefore(body, own, at);
   const port = body.text(template.ports[place]!.name);
-  const own = body.text(table.name(instance));
-  const message = `port ${port} of ${own} is connected twice; remove one of the two`;
+  const message = `port ${port} of ${body.text(table.name(instance))} is connected twice; remove one of the two`;
   body.report('name-redeclared', message, start, end);
 }
 

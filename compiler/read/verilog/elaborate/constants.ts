@@ -37,8 +37,12 @@ export function numberOf({ width, signed, value, unknown }: Constant): number | 
 /** Whether a constant is true: some bit is 1. */
 export const isTrue = (constant: Constant): boolean => (constant.value & ~constant.unknown) !== 0n;
 
-/** The indices of a range, or undefined after a report. */
-export function evaluateRange(range: RangeSyntax, scope: BlockScope): Range | undefined {
+/** The indices of a range, or undefined after a report: of more than `most` elements, say. */
+export function evaluateRange(
+  range: RangeSyntax,
+  scope: BlockScope,
+  most = MAX_WIDTH,
+): Range | undefined {
   const left = evaluateConstant(range.left, scope);
   const right = evaluateConstant(range.right, scope);
   if (left === undefined || right === undefined) return undefined;
@@ -50,9 +54,9 @@ export function evaluateRange(range: RangeSyntax, scope: BlockScope): Range | un
     shared.report('range-invalid', message, range.start, range.end);
     return undefined;
   }
-  if (Math.abs(msb - lsb) >= MAX_WIDTH) {
+  if (Math.abs(msb - lsb) >= most) {
     const width = Math.abs(msb - lsb) + 1;
-    const message = `the range has ${width} elements; at most ${MAX_WIDTH} are possible`;
+    const message = `the range has ${width} elements; at most ${most} are possible`;
     shared.report('range-invalid', message, range.start, range.end);
     return undefined;
   }

@@ -1,6 +1,7 @@
 import type { NameId } from '../../names.js';
 import type { DeclarationItem, DeclaredName } from '../syntax.js';
-import type { BlockScope } from './blockScope.js';
+import { heldMemory, isHeldFrom, MEMORY_LIMIT, sizeProblem } from './arrays.js';
+import { type BlockScope, wordsOf } from './blockScope.js';
 import type { ModuleBody } from './body.js';
 import { evaluateRange, type Range } from './constants.js';
 import { Flag, NetClass, OtherName, SymbolKind } from './symbols.js';
@@ -27,9 +28,6 @@ const fixedRanges: Partial<Record<DeclaredType, Range>> = {
   integer: { msb: 31, lsb: 0 },
   time: { msb: 63, lsb: 0 },
 };
-
-// More bits than this are no register file that gates could hold.
-const MAX_MEMORY_BITS = 1 << 22;
 
 /** What the names of a declaration have in common. */
 interface Kind {
@@ -171,30 +169,33 @@ function declareMemory(
   const { name, start, dimensions } = declared;
   const end = nameEnd(body, declared);
   if (!body.isFree(scope, name, start, end)) return;
-  const [dimension, ...more] = dimensions.map((each) => evaluateRange(each, scope));
+  const ranges = dimensions.map((each) => evaluateRange(each, scope, MEMORY_LIMIT));
   const { msb, lsb } = range ?? { msb: 0, lsb: 0 };
-  const low = dimension ? Math.min(dimension.msb, dimension.lsb) : 0;
-  const high = dimension ? Math.max(dimension.msb, dimension.lsb) : 0;
-  const bits = (high - low + 1) * (Math.abs(msb - lsb) + 1);
-  const problem =
-    more.length > 0
-      ? 'has several dimensions; index one by a computed address'
-      : bits > MAX_MEMORY_BITS
-        ? `has ${bits} bits; arrays are held bit by bit, ${MAX_MEMORY_BITS} at most`
-        : undefined;
+  const indices = ranges.map((each) => ({
+    low: each ? Math.min(each.msb, each.lsb) : 0,
+    high: each ? Math.max(each.msb, each.lsb) : 0,
+  }));
+  const shape = { width: Math.abs(msb - lsb) + 1, indices };
+  const isVariable = (flags & Flag.Variable) !== 0;
+  const isHeld =
+    isVariable && isHeldFrom(shape, body.design.memoriesFrom) && !body.inRegisters.has(start);
+  const problem = sizeProblem(shape, isHeld);
   if (problem !== undefined) {
     body.report('not-supported', `array ${body.text(name)} ${problem}`, start, end);
   }
-  if (problem !== undefined || dimension === undefined) {
+  if (problem !== undefined || ranges.includes(undefined)) {
     const value = OtherName.Faulty;
     scope.symbols.add({ name, kind: SymbolKind.Other, value, start, end });
     return;
   }
   body.buildAt(start);
-  const first = body.builder.declare(bits);
-  const value = scope.memories.push({ first, low, high }) - 1;
-  const { Memory } = SymbolKind;
-  scope.symbols.add({ name, kind: Memory, value, start, end, flags, netClass, msb, lsb });
+  const count = scope.memories.push({
+    first: body.builder.declare(isHeld ? 0 : wordsOf(indices) * shape.width),
+    indices,
+    ...(isHeld && { held: heldMemory(body, scope, shape, declared) }),
+  });
+  const { Memory: kind } = SymbolKind;
+  scope.symbols.add({ name, kind, value: count - 1, start, end, flags, netClass, msb, lsb });
 }
 
 function keepValue(
@@ -213,5 +214,6 @@ function keepValue(
 // A declared name with a value or dimensions ends after them; its own end is nearer.
 function nameEnd(body: ModuleBody, { name, start, end, value, dimensions }: DeclaredName): number {
   if (value === undefined && dimensions.length === 0) return end;
-  return start + new TextEncoder().encode(body.text(name)).length;
+  const { texts } = body.names;
+  return start + texts.end(name) - texts.start(name);
 }

@@ -1,9 +1,11 @@
 import type { Diagnostics } from '../../../diagnostics/diagnostics.js';
-import type { Span } from '../../../diagnostics/source.js';
+import type { Source, Span } from '../../../diagnostics/source.js';
 import type { Position, SourceMap } from '../../../diagnostics/sourceMap.js';
 import type { NameId, NameTable } from '../../names.js';
+import { type Allowance, Budget, BudgetExceeded, tooLarge } from '../budget.js';
 import type { ModuleSyntax, PrimitiveSyntax, VerilogSyntax } from '../syntax.js';
 import { DrivenNets } from './drivenNets.js';
+import { HELD_FROM } from './heldFrom.js';
 import type { LibraryCell } from './libraryCell.js';
 import { LimitedReport, wordSpan } from './messages.js';
 import { NameIndex } from './nameIndex.js';
@@ -11,6 +13,7 @@ import type { Outer } from './outer.js';
 import { noOverrides, type Overrides, overridesKey } from './overrides.js';
 import { type Shadowed, ShadowedModels } from './shadowedModels.js';
 import type { Template } from './template.js';
+import { Totals } from './totals.js';
 import { UnknownModules } from './unknownModules.js';
 
 /** What an instance can name. */
@@ -33,6 +36,11 @@ export interface DesignChoice {
   readonly cells?: readonly LibraryCell[];
   readonly dropped?: readonly ModuleSyntax[];
   readonly blackBoxes?: readonly string[];
+  readonly allowance?: Allowance | undefined;
+  /** Bits from which on arrays are held as memories; `HELD_FROM` unless given. */
+  readonly memoriesFrom?: number | undefined;
+  /** Finds the file that a text in a source names; undefined if there is none. */
+  readonly readInclude?: ((path: string, from: Source) => Source | undefined) | undefined;
 }
 
 /** Value of `Design.template` where there is none because of an error. */
@@ -42,14 +50,24 @@ export const NO_TEMPLATE = -1;
 const MAX_DEPTH = 300;
 const MAX_UNDRIVEN = 50;
 
+/** Levels of `Budget` that an instance counts as. */
+const LEVELS_OF_INSTANCE = 2;
+
+// What a template and its tables take, in numbers of 32 bits.
+const NUMBERS_OF_TEMPLATE = 4000;
+
 /** All modules, primitives and library cells by name, and the templates made of them so far. */
 export class Design {
   readonly names: NameTable;
   readonly sources: SourceMap;
   readonly diagnostics: Diagnostics;
+  readonly budget: Budget;
   readonly modules: readonly ModuleSyntax[];
   readonly primitives: readonly PrimitiveSyntax[];
   readonly cells: readonly LibraryCell[];
+  /** See `DesignChoice`. */
+  readonly readInclude: DesignChoice['readInclude'];
+  readonly memoriesFrom: number;
   /** Modules that others have replaced. */
   readonly dropped: readonly ModuleSyntax[];
   /** Names of modules that instances are not to have the inside of. */
@@ -68,6 +86,7 @@ export class Design {
   readonly #twins = new Map<number, Shadowed>();
   readonly #specialised = new Map<string, number>();
   readonly #parameters = new Map<NameId, readonly NameId[]>();
+  readonly #totals: Totals;
   readonly #atEnd: (() => void)[] = [];
   readonly #open: { readonly key: string; readonly module: ModuleSyntax }[] = [];
 
@@ -78,10 +97,21 @@ export class Design {
     makers: TemplateMakers,
     choice: DesignChoice = {},
   ) {
-    const { cells = [], dropped = [], blackBoxes = [] } = choice;
+    const {
+      cells = [],
+      dropped = [],
+      blackBoxes = [],
+      allowance,
+      readInclude,
+      memoriesFrom = HELD_FROM,
+    } = choice;
+    this.memoriesFrom = memoriesFrom;
+    this.readInclude = readInclude;
     this.names = syntax.names;
     this.sources = sources;
     this.diagnostics = diagnostics;
+    this.budget = new Budget(sources.length, allowance);
+    this.#totals = new Totals(this.templates, sources.length);
     this.modules = syntax.modules;
     this.primitives = syntax.primitives;
     this.cells = cells;
@@ -121,6 +151,9 @@ export class Design {
     const known = key === '' ? this.#plain[index]! - 1 : this.#specialised.get(fullKey);
     if (known !== undefined && known !== NO_TEMPLATE) return known;
     const made = this.#make(index, fullKey, key === '' ? noOverrides : overrides, place, outer);
+    if (made !== NO_TEMPLATE && key !== '' && !this.budget.grow(NUMBERS_OF_TEMPLATE)) {
+      throw tooLarge(this.#placed(place));
+    }
     if (this.templates[made]?.outerNets !== undefined) return made;
     if (key === '') this.#plain[index] = made + 1;
     else this.#specialised.set(fullKey, made);
@@ -154,6 +187,12 @@ export class Design {
     return this.names.text(name);
   }
 
+  *definitionNames(): Iterable<string> {
+    for (const list of [this.modules, this.primitives, this.cells]) {
+      for (const { name } of list) yield this.text(name);
+    }
+  }
+
   /** The span of the word that stands at a position. */
   wordSpan(position: Position): Span {
     const { source, start } = this.sources.span(position);
@@ -171,28 +210,50 @@ export class Design {
     const twin = this.#twins.get(index);
     if (twin !== undefined) this.shadowed.add(twin);
     if (this.blackBoxes.has(definition.name)) {
-      return this.templates.push(this.#makers.box(this, definition, overrides, place)) - 1;
+      return this.#add(this.#makers.box(this, definition, overrides, place), definition);
     }
     if ('template' in definition) {
-      return this.templates.push(definition.template(this, place)) - 1;
+      return this.#add(definition.template(this, place), definition);
     }
     if (!('items' in definition)) {
-      return this.templates.push(this.#makers.primitive(this, definition)) - 1;
+      return this.#add(this.#makers.primitive(this, definition), definition);
     }
     if (this.#isEndless(definition, key, place)) return NO_TEMPLATE;
     this.#open.push({ key, module: definition });
+    this.budget.enter(this.#placed(place), 0, LEVELS_OF_INSTANCE);
     const template = this.#makers.module(this, definition, overrides, outer);
+    this.budget.leave(LEVELS_OF_INSTANCE);
     this.#open.pop();
-    return this.templates.push(template) - 1;
+    return this.#add(template, definition);
+  }
+
+  #add(template: Template, { nameStart }: Definition): number {
+    this.templates.push(template);
+    const nets = this.#totals.add();
+    if (nets === undefined) return this.templates.length - 1;
+    const message =
+      `${template.name} is too large to be built: with all instances inside it, it has ${nets} nets; ` +
+      'take a part of the design as top, or leave modules out as black boxes';
+    throw new BudgetExceeded(message, this.#placed(nameStart));
+  }
+
+  #placed(position: Position): { readonly start: Position; readonly end: Position } {
+    const { start, end } = this.wordSpan(position);
+    return { start: position, end: position + end - start };
   }
 
   #isEndless(module: ModuleSyntax, key: string, place: Position): boolean {
     const again = this.#open.findIndex((each) => each.key === key);
     if (again < 0 && this.#open.length < MAX_DEPTH) return false;
     const cycle = this.#open.slice(Math.max(again, 0), Math.max(again, 0) + 20);
-    const path = [...cycle.map((each) => this.text(each.module.name)), this.text(module.name)];
-    const message = `module ${this.text(module.name)} contains itself: ${path.join(' > ')}`;
-    this.diagnostics.add('module-recursive', message, this.wordSpan(place));
+    const names = cycle.map((each) => this.text(each.module.name));
+    const path = [...names, this.text(module.name)].join(' > ');
+    const isRecursive = this.#open.some((each) => each.module === module);
+    const message = isRecursive
+      ? `module ${this.text(module.name)} contains itself: ${path}`
+      : `instances are nested ${MAX_DEPTH} deep here, more than can be built: ${names.join(' > ')} > …`;
+    const code = isRecursive ? 'module-recursive' : 'design-too-large';
+    this.diagnostics.add(code, message, this.wordSpan(place));
     return true;
   }
 

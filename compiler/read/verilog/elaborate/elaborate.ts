@@ -4,6 +4,7 @@ import type { Circuit } from '../../../circuit/circuit.js';
 import type { Diagnostics } from '../../../diagnostics/diagnostics.js';
 import type { Source } from '../../../diagnostics/source.js';
 import type { SourceMap } from '../../../diagnostics/sourceMap.js';
+import { type Allowance, BudgetExceeded } from '../budget.js';
 import type { ModuleSyntax, VerilogSyntax } from '../syntax.js';
 import { addBoxPorts } from './boxPorts.js';
 import { compileBox } from './compileBox.js';
@@ -30,6 +31,12 @@ export interface ElaborateOptions {
   readonly blackBoxes?: readonly string[];
   /** By the name of a module the source that its definition is taken from, see `readNetlist`. */
   readonly replacements?: ReadonlyMap<string, Source>;
+  /** What a text may take to elaborate; generous unless given. */
+  readonly allowance?: Allowance;
+  /** Bits from which on arrays are held as memories. */
+  readonly memoriesFrom?: number | undefined;
+  /** Finds data files of memories, see `PreprocessOptions`. */
+  readonly readInclude?: (path: string, from: Source) => Source | undefined;
 }
 
 /**
@@ -48,14 +55,43 @@ export function elaborate(
 ): Circuit | undefined {
   const found = new DistinctDiagnostics();
   const makers = { module: compileModule, primitive: compilePrimitive, box: compileBox };
-  const { blackBoxes = [], replacements = new Map(), cells = [] } = options;
+  const {
+    blackBoxes = [],
+    replacements = new Map(),
+    cells = [],
+    readInclude,
+    memoriesFrom,
+    allowance,
+  } = options;
   const replaced = withReplacements(syntax, cells, replacements, sources, found);
-  const design = new Design(replaced.syntax, sources, found, makers, { ...replaced, blackBoxes });
-  const circuit = build(design, options.top);
+  const design = new Design(replaced.syntax, sources, found, makers, {
+    ...replaced,
+    blackBoxes,
+    allowance,
+    readInclude,
+    memoriesFrom,
+  });
+  const circuit = withinBudget(design, () => build(design, options.top));
   for (const { code, message, span, related } of found.list) {
     diagnostics.add(code, message, span, related);
   }
   return circuit;
+}
+
+/** What `work` gives, or undefined and a report where it would take too much. */
+function withinBudget<T>({ diagnostics, sources }: Design, work: () => T): T | undefined {
+  try {
+    return work();
+  } catch (error) {
+    if (!(error instanceof BudgetExceeded)) throw error;
+    const { place, message } = error;
+    const span =
+      'start' in place
+        ? sources.span(place.start, place.end)
+        : wordSpan(sources.sources[place.source]!, place.offset);
+    diagnostics.add('design-too-large', message, span);
+    return undefined;
+  }
 }
 
 function build(design: Design, wanted: string | undefined): Circuit | undefined {
@@ -69,8 +105,8 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
   design.finish();
   checkBlackBoxes(design, module);
   checkTopPorts(design, module, top);
-  // What a missing module would drive is not known.
-  if (design.unknown.isEmpty) {
+  // What a missing module or anything faulty would drive is not known.
+  if (design.unknown.isEmpty && !design.diagnostics.hasErrors) {
     design.undriven.report(
       design.diagnostics,
       (more) => `${more} more nets are read but have no driver`,

@@ -1,4 +1,5 @@
 import { Edge } from '../../../circuit/circuit.js';
+import type { NetId } from '../../../circuit/ids.js';
 import {
   type Asynchronous,
   asynchronousOf,
@@ -19,11 +20,7 @@ export function buildFlipFlop(
   recording: Recording,
 ): string | undefined {
   const { inputs, output, names, initial } = pins;
-  const count = behaviour.inputs;
-  const outcomes = Array.from({ length: 1 << count }, (_, levels) =>
-    behaviour.forced(behaviour.normal(levels)),
-  );
-  const asynchronous = asynchronousOf(outcomes);
+  const asynchronous = asynchronousOf(behaviour.given());
   for (const table of [asynchronous.set, asynchronous.reset]) {
     if (dependsOn(table, clock.input)) {
       return `its value depends on the level of ${names[clock.input]} as well as on its edge`;
@@ -31,8 +28,28 @@ export function buildFlipFlop(
   }
   const moving = movingInput(behaviour, clock, asynchronous);
   if (moving !== undefined) {
-    return `a change of ${names[moving]} alone makes its output change or x; add a row without change`;
+    return `a change of ${names[moving]} alone makes its output change or x`;
   }
+  recording.register({
+    output,
+    clock: inputs[clock.input]!,
+    edge: clock.value === 1 ? Edge.Rising : Edge.Falling,
+    data: dataOf(behaviour, clock, asynchronous, pins, recording),
+    ...buildAsynchronous(asynchronous, inputs, recording),
+    initial,
+  });
+  return undefined;
+}
+
+/** The net of what an edge captures while set and reset are inactive. */
+export function dataOf(
+  behaviour: TableBehaviour,
+  clock: InputEdge,
+  asynchronous: Asynchronous,
+  { inputs, output }: StatePins,
+  recording: Recording,
+): NetId {
+  const count = behaviour.inputs;
   // The state is one more input, after the others: an enable or a toggle reads it.
   const next = truthTable(count + 1, (place) => {
     const levels = behaviour.normal(place & ((1 << count) - 1));
@@ -41,15 +58,7 @@ export function buildFlipFlop(
   });
   const data = withoutAsynchronous(next, count + 1, asynchronous);
   const nets = data.inputs.map((input) => inputs[input] ?? output);
-  recording.register({
-    output,
-    clock: inputs[clock.input]!,
-    edge: clock.value === 1 ? Edge.Rising : Edge.Falling,
-    data: buildTruthTable(data.table, nets, recording),
-    ...buildAsynchronous(asynchronous, inputs, recording),
-    initial,
-  });
-  return undefined;
+  return buildTruthTable(data.table, nets, recording);
 }
 
 /** An input whose change, other than the clock's edge, does not leave the state alone. */

@@ -43,7 +43,8 @@ function checkTerminals(body: ModuleBody, { word, row, instance }: Gate): boolea
   if (isCountRight && table.connectionPort(first) === POSITIONAL) return true;
   const { start, end } = body.wordAt(table.position(instance));
   if (!isCountRight) {
-    body.report('gate-arity', `${word} takes ${text}, got ${got} connections`, start, end);
+    const count = got === 1 ? '1 connection' : `${got} connections`;
+    body.report('gate-arity', `${word} takes ${text}, got ${count}`, start, end);
     return false;
   }
   const message = `the terminals of ${word} have no names; connect them by position`;

@@ -22,7 +22,7 @@ export function buildLatch(
     const fromZero = behaviour.steady(normal, 0);
     const fromOne = behaviour.steady(normal, 1);
     if (fromZero === undefined || fromOne === undefined) {
-      return 'its value depends on which input changed last; use always blocks in its place';
+      return 'its value depends on which input changed last';
     }
     if (fromZero === fromOne) outcomes.push(fromZero);
     else if (fromZero === '0' && fromOne === '1') outcomes.push('-');

@@ -1,6 +1,7 @@
 import type { Diagnostics } from '../../../diagnostics/diagnostics.js';
 import type { Position, SourceMap } from '../../../diagnostics/sourceMap.js';
 import type { NameId, NameTable } from '../../names.js';
+import type { Budget } from '../budget.js';
 import type { Template } from './template.js';
 
 /** What the making of a cell's template needs of the design. */
@@ -8,6 +9,7 @@ export interface CellContext {
   readonly names: NameTable;
   readonly sources: SourceMap;
   readonly diagnostics: Diagnostics;
+  readonly budget: Budget;
 }
 
 /** A cell that a library in another form than Verilog describes; instances name it like a module. */

@@ -1,7 +1,11 @@
 import { GateKind } from '../../../circuit/gates.js';
 import { type NetId, netId } from '../../../circuit/ids.js';
+import { combinationalDiagram, combinationalTable } from '../../../circuit/tables/cellTable.js';
+import { eventsOfRows } from '../../../circuit/tables/tableEvents.js';
 import type { PrimitiveSyntax } from '../syntax.js';
 import type { Design } from './design.js';
+import { exactRows } from './exactRows.js';
+import { gateDiagram } from './gateDiagrams.js';
 import { PrimitiveTable } from './primitiveTable.js';
 import type { Recording } from './recording.js';
 import { lowerSequential } from './sequentialPrimitive.js';
@@ -13,8 +17,9 @@ const MAX_INPUTS = 12;
 /**
  * Builds the logic of a primitive: its output is net `first`, its inputs are the nets after it.
  *
- * Exact where all inputs are 0 or 1; a combination without a row, which gives x in the standard,
- * gives 0 (IEEE 1364-2005, clause 8).
+ * Where what is built does not say all that the table says of x, or is not even like it, the
+ * recording gets the table too. A combination without a row gives x (IEEE 1364-2005, clause 8),
+ * which two-valued runs read as 0.
  */
 export function lowerPrimitive(
   design: Design,
@@ -23,23 +28,52 @@ export function lowerPrimitive(
   first: NetId,
 ): void {
   const { ports, rows, sequential, initial } = primitive;
+  const name = design.text(primitive.name);
   const inputs = ports.slice(1).map((_, place) => netId(first + 1 + place));
-  const refuse = (reason: string): void => {
-    const message = `primitive ${design.text(primitive.name)} is not supported: ${reason}`;
-    design.diagnostics.add('not-supported', message, design.wordSpan(primitive.nameStart));
-  };
+  const report = (code: 'not-supported' | 'table-run', message: string): void =>
+    design.diagnostics.add(code, message, design.wordSpan(primitive.nameStart));
   if (inputs.length > MAX_INPUTS) {
-    refuse(`it has ${inputs.length} inputs, more than ${MAX_INPUTS}; split it`);
+    const reason = `it has ${inputs.length} inputs, more than ${MAX_INPUTS}; split it`;
+    report('not-supported', `primitive ${name} is not supported: ${reason}`);
     return;
   }
-  const table = new PrimitiveTable(rows, inputs.length);
   if (!sequential) {
-    const column = truthTable(inputs.length, (levels) => table.level(levels, 0) === '1');
-    recording.drive(first, GateKind.Buf, [buildTruthTable(column, inputs, recording)]);
+    lowerCombinational(name, primitive, inputs, recording, first);
     return;
   }
-  const names = ports.slice(1).map((name) => design.text(name));
+  const names = ports.slice(1).map((port) => design.text(port));
   const pins = { output: first, inputs, names, initial: initial ?? 2 };
-  const reason = lowerSequential(table, pins, recording);
-  if (reason !== undefined) refuse(reason);
+  const source = eventsOfRows(exactRows(rows), inputs.length);
+  const table = new PrimitiveTable(rows, inputs.length);
+  const reason = lowerSequential({ name, table, source, isExact: true }, pins, recording);
+  if (reason !== undefined) report('table-run', `primitive ${name} ${reason}`);
+}
+
+function lowerCombinational(
+  name: string,
+  { rows }: PrimitiveSyntax,
+  inputs: readonly NetId[],
+  recording: Recording,
+  output: NetId,
+): void {
+  const count = inputs.length;
+  const table = new PrimitiveTable(rows, count);
+  const column = truthTable(count, (levels) => table.level(levels, 0) === '1');
+  const exact = combinationalDiagram(exactRows(rows), count);
+  if (exact.settled === gateDiagram(exact.diagram, column, count)) {
+    recording.drive(output, GateKind.Buf, [buildTruthTable(column, inputs, recording)]);
+    return;
+  }
+  if (column.includes('0') && column.includes('1')) {
+    recording.drive(output, GateKind.Buf, [buildTruthTable(column, inputs, recording)]);
+  } else {
+    // A gate all the same: what depends on x is no constant.
+    const [kind, constant] = column.includes('1')
+      ? ([GateKind.Or, GateKind.One] as const)
+      : ([GateKind.And, GateKind.Zero] as const);
+    recording.drive(output, kind, [inputs[0]!, recording.constant(constant)]);
+  }
+  const made = combinationalTable(name, count, exact);
+  const reads = made.three.settlers.map((place) => inputs[place]!);
+  recording.tables.push({ output, inputs, reads, table: made });
 }

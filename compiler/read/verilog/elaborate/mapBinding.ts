@@ -7,6 +7,7 @@ export function mapBinding(binding: Binding, map: (net: NetId) => NetId): Bindin
     case 'signal':
       return { ...binding, nets: binding.nets.map(map) };
     case 'memory':
+      if (binding.held !== undefined) return { ...binding, isFar: true };
       return { ...binding, words: binding.words.map((word) => word.map(map)) };
     case 'parameter':
       return binding;

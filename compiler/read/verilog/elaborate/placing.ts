@@ -1,5 +1,7 @@
 import type { Position } from '../../../diagnostics/sourceMap.js';
+import { listed } from '../../listed.js';
 import type { NameId } from '../../names.js';
+import { hintOf } from '../../nearest.js';
 import { evaluateConstant } from '../behaviour/index.js';
 import type { Constant } from '../scope.js';
 import type { RangeSyntax } from '../syntax.js';
@@ -10,6 +12,7 @@ import { defparamsOf } from './defparams.js';
 import { NO_TEMPLATE } from './design.js';
 import { type DeepOverride, noOverrides, type Overrides } from './overrides.js';
 import { SymbolKind } from './symbols.js';
+import { wordBefore, wordFrom } from './wordNear.js';
 
 /**
  * Gives every instance its name in its scope. The value of the symbol is the instance's number
@@ -71,7 +74,7 @@ function addName(
   position: Position,
 ): void {
   if (symbols.find(name) >= 0) {
-    const { start, end } = body.wordAt(position);
+    const { start, end } = wordFrom(body, name, position);
     body.reportTaken(symbols, name, start, end);
     return;
   }
@@ -175,7 +178,8 @@ function overridesOf(
   for (const [place, { name, value }] of parameters.entries()) {
     const parameter = name === 0 ? known[place] : known.find((each) => each === name);
     if (parameter === undefined) {
-      reportParameter(body, definition, name, value);
+      const at = name === 0 ? value : wordBefore(body, name, value.start);
+      reportParameter(body, definition, name, at);
       failed = true;
       continue;
     }
@@ -205,10 +209,11 @@ function reportParameter(
   { start, end }: { readonly start: Position; readonly end: Position },
 ): void {
   const known = body.design.parametersOf(module).map((each) => body.text(each));
-  const list = known.length === 0 ? 'it has none' : `it has ${known.join(', ')}`;
+  const list = known.length === 0 ? 'it has none' : `it has ${listed(known)}`;
   const text = body.text(module);
   if (name !== 0) {
-    const message = `module ${text} has no parameter ${body.text(name)}; ${list}`;
+    const own = body.text(name);
+    const message = `module ${text} has no parameter ${own}; ${list}${hintOf(own, known)}`;
     body.report('name-undeclared', message, start, end);
   } else {
     body.report(

@@ -58,6 +58,8 @@ function readersOf(
     if (recording.driverKind(driver) !== BUS_PART) continue;
     readers[find(recording.driverOutput(driver))]!++;
   }
+  for (const net of recording.writtenNets()) readers[find(net)]!++;
+  for (const { inputs } of recording.tables) for (const net of inputs) readers[find(net)]!++;
   children.forEachNet((net) => readers[find(net)]!++);
   for (const net of boundary) readers[net]!++;
   return readers;

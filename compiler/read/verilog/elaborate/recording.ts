@@ -4,7 +4,12 @@ import { Edge, Priority } from '../../../circuit/circuit.js';
 import { GateKind } from '../../../circuit/gates.js';
 import { GrowableUint8, GrowableUint32 } from '../../../circuit/growable.js';
 import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
+import type { MemoryIndex } from '../../../circuit/memory.js';
+import { pinNets, type WritePins } from '../../../circuit/memoryTable.js';
+import type { CellTable } from '../../../circuit/tables/cellTable.js';
 import { X } from '../../../circuit/values.js';
+import { type Budget, tooLarge } from '../budget.js';
+import type { InitialContents } from '../initialContents.js';
 import type { GateSink } from '../scope.js';
 import { Unions } from './unions.js';
 
@@ -29,6 +34,33 @@ export const DROPPED = 255;
  */
 export const BUS_PART = 254;
 export const BusPin = { Data: 0, Control: 1, Traits: 2 } as const;
+
+/** The table of a cell whose gate, register or latch drives `output`. */
+export interface RecordedTable {
+  readonly output: NetId;
+  readonly inputs: readonly NetId[];
+  /** The inputs that count as read. */
+  readonly reads: readonly NetId[];
+  readonly table: CellTable;
+}
+
+/** A memory of a module, with its ports. */
+export interface RecordedMemory {
+  readonly name: string;
+  /** Index of the block of the module that it is declared in. */
+  readonly block: number;
+  readonly width: number;
+  readonly indices: readonly MemoryIndex[];
+  readonly contents: InitialContents;
+  readonly origin: Origin;
+  /** Ports by which it is read, each with the driver of the lowest bit; the others follow. */
+  readonly reads: { readonly address: readonly NetId[]; readonly firstDriver: number }[];
+  readonly writes: WritePins[];
+}
+
+// What a net and a driver take in the columns below.
+const NUMBERS_OF_NET = 4;
+const NUMBERS_OF_DRIVER = 5;
 
 const packAttributes = (edge: number, priority: number, initial: number): number =>
   edge | (priority << 1) | (initial << 3);
@@ -60,9 +92,19 @@ export class Recording implements GateSink {
   readonly #offset = new GrowableUint32(8);
   readonly #fanin = new GrowableUint32(16);
   readonly #constants = new Map<number, NetId>();
+  /** Of a cell with one output or a few; empty for other modules. */
+  readonly tables: RecordedTable[] = [];
+  readonly memories: RecordedMemory[] = [];
+  readonly #words = new Map<string, readonly NetId[]>();
+  readonly #budget: Budget | undefined;
   #undeclared = 0;
   #atSource = 0;
   #atOffset = 0;
+
+  /** `budget` keeps it from becoming too large, where that is not sure anyway. */
+  constructor(budget?: Budget) {
+    this.#budget = budget;
+  }
 
   at(sourceIndex: number, offset: number): void {
     this.#atSource = sourceIndex;
@@ -79,6 +121,7 @@ export class Recording implements GateSink {
   }
 
   #add(declared: number): NetId {
+    this.#grow(NUMBERS_OF_NET);
     this.#declared.push(declared);
     this.#netSource.push(this.#atSource);
     this.#netOffset.push(this.#atOffset);
@@ -133,6 +176,7 @@ export class Recording implements GateSink {
 
   drive(net: NetId, kind: GateKind, fanin: readonly NetId[]): void {
     this.#begin(net, kind);
+    this.#grow(fanin.length);
     for (const source of fanin) this.#fanin.push(source);
   }
 
@@ -163,12 +207,39 @@ export class Recording implements GateSink {
     this.#pins(pins, pins.enable ?? NO_NET, Edge.Rising);
   }
 
+  /** Adds a memory without ports; returns its number. */
+  memory(memory: Omit<RecordedMemory, 'origin' | 'reads' | 'writes'>): number {
+    const origin = { source: this.#atSource, offset: this.#atOffset };
+    return this.memories.push({ ...memory, origin, reads: [], writes: [] }) - 1;
+  }
+
+  readMemory(memory: number, address: readonly NetId[]): readonly NetId[] {
+    const key = `${memory} ${address.join()}`;
+    const known = this.#words.get(key);
+    if (known !== undefined) return known;
+    const { width, reads } = this.memories[memory]!;
+    reads.push({ address: [...address], firstDriver: this.driverCount });
+    const word = Array.from({ length: width }, () => this.net());
+    for (const net of word) this.drive(net, GateKind.MemoryRead, address);
+    this.#words.set(key, word);
+    return word;
+  }
+
+  writeMemory(memory: number, pins: WritePins): void {
+    this.memories[memory]!.writes.push(pins);
+  }
+
   /** Adds what drives a net part of the time or weakly; `control` is `NO_NET` for always. */
   busPart(net: NetId, data: NetId, control: NetId, traits: PartTraits): void {
     this.#begin(net, BUS_PART);
     this.#fanin.push(data);
     this.#fanin.push(control);
     this.#fanin.push(packTraits(traits));
+  }
+
+  /** The nets that write ports read; some may stand there several times. */
+  *writtenNets(): Iterable<NetId> {
+    for (const { writes } of this.memories) for (const pins of writes) yield* pinNets(pins);
   }
 
   // ---- What was recorded, for completing and stamping the module ----
@@ -242,6 +313,7 @@ export class Recording implements GateSink {
   }
 
   #begin(net: NetId, kind: number): void {
+    this.#grow(NUMBERS_OF_DRIVER);
     const driver = this.#output.length;
     const root = this.find(net);
     if (this.#firstDriver.get(root) === 0) this.#firstDriver.set(root, driver + 1);
@@ -250,6 +322,11 @@ export class Recording implements GateSink {
     this.#start.push(this.#fanin.length);
     this.#source.push(this.#atSource);
     this.#offset.push(this.#atOffset);
+  }
+
+  #grow(numbers: number): void {
+    if (this.#budget?.grow(numbers) !== false) return;
+    throw tooLarge({ source: this.#atSource, offset: this.#atOffset });
   }
 
   #pins(pins: LatchPins, control: NetId, edge: number): void {

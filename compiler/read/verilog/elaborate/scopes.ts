@@ -70,9 +70,11 @@ const isGenerate = (item: Item): item is GenerateItem =>
   item.kind === 'generateFor' || item.kind === 'generateIf' || item.kind === 'generateCase';
 
 function expand(body: ModuleBody, scope: BlockScope, item: GenerateItem, number: number): void {
+  body.budget.enter(item, 0);
   if (item.kind === 'generateFor') expandFor(body, scope, item, number, expandItems);
   else if (item.kind === 'generateIf') expandIf(body, scope, item, number, expandItems);
   else expandCase(body, scope, item, number, expandItems);
+  body.budget.leave();
 }
 
 function expandBlock(
@@ -134,10 +136,15 @@ function declareBlocks(body: ModuleBody, scope: BlockScope, statement: Statement
       for (const each of statement.body) declareBlocks(body, inner, each);
       break;
     }
-    case 'if':
-      declareBlocks(body, scope, statement.whenTrue);
-      if (statement.whenFalse !== undefined) declareBlocks(body, scope, statement.whenFalse);
+    case 'if': {
+      // Chains of `else if` may be long.
+      let rest: Statement | undefined = statement;
+      for (; rest?.kind === 'if'; rest = rest.whenFalse) {
+        declareBlocks(body, scope, rest.whenTrue);
+      }
+      if (rest !== undefined) declareBlocks(body, scope, rest);
       break;
+    }
     case 'case':
       for (const item of statement.items) declareBlocks(body, scope, item.body);
       break;

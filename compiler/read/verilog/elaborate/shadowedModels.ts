@@ -1,6 +1,7 @@
 import type { Diagnostics } from '../../../diagnostics/diagnostics.js';
 import type { Span } from '../../../diagnostics/source.js';
 import type { Position } from '../../../diagnostics/sourceMap.js';
+import { listed } from '../../listed.js';
 import type { NameId } from '../../names.js';
 
 /** A cell with two models, of which the one at `chosen` decides. */
@@ -40,9 +41,8 @@ export class ShadowedModels {
   report(): void {
     for (const models of this.#found.values()) {
       const { chosen, other } = models[0]!;
-      const names = models.slice(0, MAX_LISTED).map(({ name }) => this.#texts.text(name));
-      const more = models.length - names.length;
-      const list = names.join(', ') + (more > 0 ? ` and ${more} more` : '');
+      const names = models.map(({ name }) => this.#texts.text(name));
+      const list = listed(names, MAX_LISTED);
       const [path, otherPath] = [this.#path(chosen), this.#path(other)];
       const message =
         path === otherPath

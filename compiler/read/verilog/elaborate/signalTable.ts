@@ -14,9 +14,9 @@ interface Rarity {
 /** The signals of a module in order: eight bytes for each scalar, of which there are a million. */
 export class SignalTable implements LazyList<Signal> {
   readonly #names: NameSource;
-  readonly #name = new GrowableUint32(4);
-  readonly #offset = new GrowableUint32(4);
-  readonly #rarities = new Map<number, Rarity>();
+  // The name of each signal and then its offset.
+  readonly #columns = new GrowableUint32(4);
+  #rarities: Map<number, Rarity> | undefined;
   #bits = 0;
 
   constructor(names: NameSource) {
@@ -24,7 +24,7 @@ export class SignalTable implements LazyList<Signal> {
   }
 
   get length(): number {
-    return this.#name.length;
+    return this.#columns.length >> 1;
   }
 
   /** Sum of the widths so far. */
@@ -34,8 +34,8 @@ export class SignalTable implements LazyList<Signal> {
 
   /** Adds a scalar. */
   pushScalar(name: NameId): void {
-    this.#name.push(name);
-    this.#offset.push(this.#bits++);
+    this.#columns.push(name);
+    this.#columns.push(this.#bits++);
   }
 
   /** Adds any signal; `text` where its name is not the text of `name`. */
@@ -45,21 +45,22 @@ export class SignalTable implements LazyList<Signal> {
     text?: string,
   ): void {
     const { msb, lsb, isVector } = shape;
+    this.#rarities ??= new Map();
     this.#rarities.set(this.length, { msb, lsb, isVector, name: text });
-    this.#name.push(name);
-    this.#offset.push(this.#bits);
+    this.#columns.push(name);
+    this.#columns.push(this.#bits);
     this.#bits += Math.abs(msb - lsb) + 1;
   }
 
   at(index: number): Signal | undefined {
     if (index < 0 || index >= this.length) return undefined;
-    const { msb, lsb, isVector, name } = this.#rarities.get(index) ?? scalar;
+    const { msb, lsb, isVector, name } = this.#rarities?.get(index) ?? scalar;
     return {
-      name: name ?? this.#names.text(this.#name.get(index)),
+      name: name ?? this.#names.text(this.#columns.get(2 * index)),
       msb,
       lsb,
       isVector,
-      offset: this.#offset.get(index),
+      offset: this.#columns.get(2 * index + 1),
       width: Math.abs(msb - lsb) + 1,
     };
   }

@@ -40,6 +40,8 @@ export class Stamper {
   readonly #frames: Frame[] = [];
   // Lists of each length that gates are handed over in, so that none is made per gate.
   readonly #lists: NetId[][] = [];
+  // The nets behind the names of the scope that is being added.
+  #scratch = new Uint32Array(64);
   /** Index of the names of each template's first block in the circuit. */
   readonly #modules = new Map<Template, number>();
   /** The black boxes stamped so far. */
@@ -56,6 +58,7 @@ export class Stamper {
     const frame = this.#enter(0, top, undefined);
     this.#fill(frame);
     this.#addScopes(frame, top.name, 0);
+    this.#addMemories(frame);
     const boundary = top.boundary.map((net) => frame.nets[net]!);
     for (let depth = 0; depth >= 0; ) {
       const current = this.#frames[depth]!;
@@ -81,6 +84,7 @@ export class Stamper {
     this.#fill(frame);
     const name = children.name(child);
     if (name !== 0) this.#addScopes(frame, name, parent.scopes[children.block(child)]!);
+    this.#addMemories(frame);
     if (template.isBox) this.#addBox(parent, child, frame);
     return template.children.count > 0;
   }
@@ -127,34 +131,41 @@ export class Stamper {
         nets[net] = builder.net();
       }
     }
+    // What drives each net, for tables: another driver of a bus may have come first.
+    const driven = recording.tables.length > 0 ? new Map<number, NetId>() : undefined;
     for (let driver = 0; driver < recording.driverCount; driver++) {
       if (origin === undefined) {
         builder.at(recording.driverSource(driver), recording.driverOffset(driver));
       }
-      this.#drive(template, nets, driver);
+      const net = this.#drive(template, nets, driver);
+      if (net !== NO_NET) driven?.set(nets[recording.driverOutput(driver)]!, net);
+    }
+    for (const { output, inputs, table } of recording.tables) {
+      const own = inputs.map((net) => netId(nets[net]!));
+      builder.table(driven!.get(nets[output]!)!, own, table);
     }
     for (const [net, type] of template.netTypes ?? []) {
       builder.setNetType(netId(nets[net]!), type);
     }
   }
 
-  #drive({ recording }: Template, nets: Uint32Array, driver: number): void {
+  /** Returns the net that the driver has got, `NO_NET` for what is no driver of its own. */
+  #drive({ recording }: Template, nets: Uint32Array, driver: number): NetId {
     const kind = recording.driverKind(driver);
-    if (kind === DROPPED) return;
+    if (kind === DROPPED || kind === GateKind.MemoryRead) return NO_NET;
     const output = netId(nets[recording.driverOutput(driver)]!);
     const start = recording.faninStart(driver);
     if (kind === GateKind.Register || kind === GateKind.Latch) {
-      this.#driveState(recording, driver, output, nets);
-      return;
+      return this.#driveState(recording, driver, output, nets);
     }
     if (kind === BUS_PART) {
       const [data, control] = this.#translated(recording, nets, start, BusPin.Traits);
       this.#builder.busPart(output, data!, control!, recording.faninAt(start + BusPin.Traits));
-      return;
+      return NO_NET;
     }
     const count = kind <= GateKind.Unknown ? 0 : recording.faninEnd(driver) - start;
     const fanin = this.#translated(recording, nets, start, count);
-    this.#builder.drive(output, kind as GateKind, fanin);
+    return this.#builder.drive(output, kind as GateKind, fanin);
   }
 
   #driveState(
@@ -162,7 +173,7 @@ export class Stamper {
     driver: number,
     output: NetId,
     nets: Uint32Array,
-  ): void {
+  ): NetId {
     const start = recording.faninStart(driver);
     const pins = this.#translated(recording, nets, start, Pin.Attributes);
     const { edge, priority, initial } = unpackAttributes(recording.faninAt(start + Pin.Attributes));
@@ -171,10 +182,10 @@ export class Stamper {
     const set = pins[Pin.Set]!;
     const reset = pins[Pin.Reset]!;
     if (recording.driverKind(driver) === GateKind.Latch) {
-      this.#builder.latch({ output, enable: control, data, set, reset, priority, initial });
-    } else {
-      this.#builder.register({ output, clock: control, edge, data, set, reset, priority, initial });
+      return this.#builder.latch({ output, enable: control, data, set, reset, priority, initial });
     }
+    const clock = control;
+    return this.#builder.register({ output, clock, edge, data, set, reset, priority, initial });
   }
 
   /** A stretch of the fan-in list in nets of the circuit; overwritten by the next call. */
@@ -193,6 +204,39 @@ export class Stamper {
     return list;
   }
 
+  /** Adds the memories of a template with their ports; the scopes must be there. */
+  #addMemories({ template: { recording }, nets, scopes, origin: cell }: Frame): void {
+    const builder = this.#builder;
+    const moved = (list: readonly NetId[]): NetId[] => list.map((net) => netId(nets[net]!));
+    for (const memory of recording.memories) {
+      const { name, block, width, indices, contents, origin } = memory;
+      const path = builder.hierarchy.path(scopes[block]!);
+      const number = builder.memory({
+        ...{ name: path === '' ? name : `${path}.${name}`, width, indices },
+        ...{ initial: contents.bytes, sourceIndex: origin.source, offset: origin.offset },
+      });
+      for (const { address, firstDriver } of memory.reads) {
+        const place = cell ?? recording.driverOrigin(firstDriver);
+        builder.at(place.source, place.offset);
+        const data = Array.from({ length: width }, (_, bit) => {
+          const isRead = recording.driverKind(firstDriver + bit) !== DROPPED;
+          return isRead ? netId(nets[recording.driverOutput(firstDriver + bit)]!) : NO_NET;
+        });
+        if (data.some((net) => net !== NO_NET)) builder.readPort(number, moved(address), data);
+      }
+      for (const { clock, edge, enable, address, data, mask } of memory.writes) {
+        builder.writeMemory(number, {
+          clock: netId(nets[clock]!),
+          ...(edge !== undefined && { edge }),
+          ...(enable !== undefined && { enable: netId(nets[enable]!) }),
+          address: moved(address),
+          data: moved(data),
+          ...(mask !== undefined && { mask: moved(mask) }),
+        });
+      }
+    }
+  }
+
   /** Adds a scope for an instance and one for each block inside it. */
   #addScopes({ template, nets, scopes }: Frame, name: NameId | string, parent: number): void {
     const { hierarchy } = this.#builder;
@@ -207,12 +251,12 @@ export class Stamper {
     }
     for (let index = 0; index < blocks.length; index++) {
       const block = blocks[index]!;
-      for (let bit = 0; bit < block.nets.length; bit++) {
-        block.scratch[bit] = nets[block.nets[bit]!]!;
-      }
+      const count = block.nets.length;
+      if (count > this.#scratch.length) this.#scratch = new Uint32Array(2 * count);
+      for (let bit = 0; bit < count; bit++) this.#scratch[bit] = nets[block.nets[bit]!]!;
       const outer = index === 0 ? parent : scopes[block.parent]!;
       const own = index === 0 ? name : block.name;
-      scopes[index] = hierarchy.addScope(own, outer, module! + index, block.scratch);
+      scopes[index] = hierarchy.addScope(own, outer, module! + index, this.#scratch, count);
     }
   }
 }

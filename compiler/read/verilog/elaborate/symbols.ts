@@ -67,6 +67,9 @@ export interface NewSymbol {
 const Field = { Name: 0, Traits: 1, Value: 2, Start: 3, End: 4, Msb: 5, Lsb: 6 } as const;
 const RECORD = 7;
 
+/** Names in a table that has no index. */
+const SHORT = 8;
+
 // `Traits` holds the kind in its lowest byte, then the flags, then the net class.
 const FLAGS = 8;
 const CLASS = 16;
@@ -74,7 +77,8 @@ const BYTE = 0xff;
 
 /** The names of one scope: twenty-eight bytes a symbol, so that a module may have a million. */
 export class SymbolTable {
-  readonly #index = new NameIndex();
+  /** Only of a table that has become too long for looking at each of its names. */
+  #index: NameIndex | undefined;
   readonly #records = new GrowableUint32(2 * RECORD);
   #count = 0;
 
@@ -84,14 +88,19 @@ export class SymbolTable {
 
   /** The symbol of a name, or -1. */
   find(name: NameId): number {
-    return this.#index.get(name);
+    if (this.#index !== undefined) return this.#index.get(name);
+    for (let symbol = 0; symbol < this.#count; symbol++) {
+      if (this.#get(symbol, Field.Name) === name) return symbol;
+    }
+    return -1;
   }
 
   /** Adds a symbol; the name must be new. */
   add(symbol: NewSymbol): number {
     const id = this.#count++;
     const { flags = 0, netClass = NetClass.Plain, msb = 0, lsb = 0 } = symbol;
-    this.#index.set(symbol.name, id);
+    if (this.#index === undefined && id === SHORT) this.#makeIndex();
+    this.#index?.set(symbol.name, id);
     const records = this.#records;
     records.push(symbol.name);
     records.push(symbol.kind | (flags << FLAGS) | (netClass << CLASS));
@@ -157,6 +166,11 @@ export class SymbolTable {
   /** Number of bits: of a signal, or of one word of a memory. */
   width(symbol: number): number {
     return Math.abs(this.msb(symbol) - this.lsb(symbol)) + 1;
+  }
+
+  #makeIndex(): void {
+    this.#index = new NameIndex(2 * SHORT);
+    for (let symbol = 0; symbol < SHORT; symbol++) this.#index.set(this.name(symbol), symbol);
   }
 
   #get(symbol: number, field: number): number {

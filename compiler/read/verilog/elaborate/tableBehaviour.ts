@@ -43,6 +43,13 @@ export class TableBehaviour {
     return value === resolved(fromOne, 1) ? value : undefined;
   }
 
+  /** Per combination of levels: what they alone give whatever the state, notifiers apart. */
+  given(): (Outcome | undefined)[] {
+    return Array.from({ length: 1 << this.inputs }, (_, levels) =>
+      this.forced(this.normal(levels)),
+    );
+  }
+
   /** The next state when an input has changed and the levels are now these. */
   next(input: number, levels: number, state: number): Outcome {
     return resolved(this.#table.event(input, levels, state), state);
@@ -69,6 +76,43 @@ export class TableBehaviour {
       }
     }
     return clocks;
+  }
+
+  /** Whether an edge of `clocks` gives different values as other inputs or the state say. */
+  ticks({ input, value }: InputEdge): boolean {
+    const given = new Set<Outcome>();
+    for (const levels of this.combinations()) {
+      if (((levels >> input) & 1) !== value || this.forced(levels) !== undefined) continue;
+      for (const state of [0, 1]) given.add(this.next(input, levels, state));
+    }
+    return given.has('0') && given.has('1');
+  }
+
+  /** Whether an input that is no notifier can make the output x. */
+  becomesUnknown(): boolean {
+    return this.combinations().some((levels) =>
+      this.live.some((input) => [0, 1].some((state) => this.next(input, levels, state) === 'x')),
+    );
+  }
+
+  /** The inputs on which it depends what the levels alone give, and those that decide alone. */
+  levels(): { readonly levels: number[]; readonly forcing: Map<number, number> } {
+    const given = Array.from({ length: 1 << this.inputs }, (_, place) => {
+      const levels = this.normal(place);
+      const value = this.steady(levels, 0);
+      return value === this.steady(levels, 1) ? value : undefined;
+    });
+    const levels = this.live.filter((input) =>
+      given.some((value, place) => value !== given[place ^ (1 << input)]),
+    );
+    const forcing = new Map<number, number>();
+    for (const input of levels) {
+      const decides = (value: number): boolean =>
+        given.every((each, place) => ((place >> input) & 1) !== value || each !== undefined);
+      const value = [0, 1].find(decides);
+      if (value !== undefined) forcing.set(input, value);
+    }
+    return { levels, forcing };
   }
 
   /** Whether the levels give the state a value that lasts. */

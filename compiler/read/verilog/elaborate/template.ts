@@ -46,8 +46,6 @@ export interface BlockNames {
   readonly names: ModuleNames;
   /** One net for each bit, in the order of `Signal.offset`. */
   readonly nets: Uint32Array;
-  /** As long as `nets`, for the nets of the instance that is being stamped. */
-  readonly scratch: Uint32Array;
 }
 
 /**

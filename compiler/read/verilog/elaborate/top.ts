@@ -1,3 +1,5 @@
+import type { DiagnosticCode } from '../../../diagnostics/codes.js';
+import { listed } from '../../listed.js';
 import type { NameId } from '../../names.js';
 import type { ModuleSyntax } from '../syntax.js';
 import type { Design } from './design.js';
@@ -12,11 +14,11 @@ const MAX_LISTED = 20;
  * instances of modules do not. Undefined after a report.
  */
 export function chooseTop(design: Design, wanted: string | undefined): ModuleSyntax | undefined {
-  if (wanted !== undefined) return namedTop(design, wanted);
   if (design.modules.length === 0) {
-    design.diagnostics.add('top-unknown', 'the files define no module; name a file with one');
+    report(design, 'top-unknown', 'the files define no module; name a file with one');
     return undefined;
   }
+  if (wanted !== undefined) return namedTop(design, wanted);
   const { used, parents } = instantiations(design);
   const unused = design.modules.filter(({ name }) => !used.has(name));
   const noBoxes = unused.filter(({ name }) => !design.blackBoxes.has(name));
@@ -35,9 +37,15 @@ function namedTop(design: Design, wanted: string): ModuleSyntax | undefined {
   if (found !== undefined) return found;
   const { used } = instantiations(design);
   const roots = design.modules.filter(({ name }) => !used.has(name));
-  const listed = listOf(design, roots.length > 0 ? roots : design.modules);
-  design.diagnostics.add('top-unknown', `no module is called ${wanted}; there is ${listed}`);
+  const known = listOf(design, roots.length > 0 ? roots : design.modules);
+  report(design, 'top-unknown', `no module is called ${wanted}; there is ${known}`);
   return undefined;
+}
+
+/** Reports what is wrong with all of the files, at the start of the first. */
+function report({ diagnostics, sources }: Design, code: DiagnosticCode, message: string): void {
+  const [source] = sources.sources;
+  diagnostics.add(code, message, source && { source, start: 0, end: 0 });
 }
 
 /** Names that some other module instantiates, and modules that instantiate any module. */
@@ -61,9 +69,9 @@ function instantiations(design: Design): {
 
 function reportTie(design: Design, choices: readonly ModuleSyntax[]): void {
   if (choices.length === 0) {
-    const listed = listOf(design, design.modules);
-    const message = `every module is instantiated by another (${listed}); choose one with --top NAME`;
-    design.diagnostics.add('top-ambiguous', message);
+    const all = listOf(design, design.modules);
+    const message = `every module is instantiated by another (${all}); choose one with --top NAME`;
+    report(design, 'top-ambiguous', message);
     return;
   }
   const message = `no module instantiates ${listOf(design, choices)}; choose one with --top NAME`;
@@ -75,7 +83,8 @@ function reportTie(design: Design, choices: readonly ModuleSyntax[]): void {
 }
 
 function listOf(design: Design, modules: readonly ModuleSyntax[]): string {
-  const names = modules.slice(0, MAX_LISTED).map(({ name }) => design.text(name));
-  const more = modules.length - names.length;
-  return names.join(', ') + (more > 0 ? ` and ${more} more` : '');
+  return listed(
+    modules.map(({ name }) => design.text(name)),
+    MAX_LISTED,
+  );
 }

@@ -8,6 +8,9 @@ import type { GateSink } from '../scope.js';
  */
 export type TruthTable = string;
 
+/** What makes the gates of a function. */
+type GateMaker = Pick<GateSink, 'gate'>;
+
 /** The table of a function of `inputs` inputs. */
 export function truthTable(inputs: number, valueAt: (levels: number) => boolean): TruthTable {
   return Array.from({ length: 1 << inputs }, (_, i) => (valueAt(i) ? '1' : '0')).join('');
@@ -29,16 +32,16 @@ export const dependsOn = (table: TruthTable, input: number): boolean =>
 export function buildTruthTable(
   table: TruthTable,
   inputs: readonly NetId[],
-  sink: GateSink,
+  sink: GateMaker,
 ): NetId {
   return new Expansion(sink).build(table, inputs);
 }
 
 class Expansion {
-  readonly #sink: GateSink;
+  readonly #sink: GateMaker;
   readonly #made = new Map<string, NetId>();
 
-  constructor(sink: GateSink) {
+  constructor(sink: GateMaker) {
     this.#sink = sink;
   }
 

@@ -1,8 +1,12 @@
 import type { Diagnostics } from '../../../diagnostics/diagnostics.js';
 import type { Span } from '../../../diagnostics/source.js';
 import type { Position } from '../../../diagnostics/sourceMap.js';
+import { listed } from '../../listed.js';
 import type { NameId } from '../../names.js';
+import { hintOf } from '../../nearest.js';
 import { type InstanceTable, POSITIONAL } from '../instances.js';
+
+const MOST_SHOWN = 20;
 
 interface Unknown {
   readonly first: Position;
@@ -16,6 +20,8 @@ interface Unknown {
 interface Texts {
   readonly diagnostics: Diagnostics;
   text(name: NameId): string;
+  /** Names of all that an instance can be of. */
+  definitionNames(): Iterable<string>;
   wordSpan(position: Position): Span;
 }
 
@@ -53,11 +59,15 @@ export class UnknownModules {
   report(): void {
     const entries = [...this.#unknown];
     if (entries.length === 0) return;
-    const list = entries.map(([name, unknown]) => this.#describe(name, unknown)).join('; ');
+    const shown = entries.slice(0, MOST_SHOWN);
+    const more = entries.length - shown.length;
+    const list =
+      shown.map(([name, unknown]) => this.#describe(name, unknown)).join('; ') +
+      (more > 0 ? `; and ${more} more modules` : '');
     const message =
       `no file defines ${list}. ` +
       'Add the file, such as a cell library, that defines the missing modules';
-    const [first, ...others] = entries.map(([name, { first: place }]) => ({
+    const [first, ...others] = shown.map(([name, { first: place }]) => ({
       message: `the first instance of ${this.#texts.text(name)} is here`,
       span: this.#texts.wordSpan(place),
     }));
@@ -66,9 +76,11 @@ export class UnknownModules {
 
   #describe(name: NameId, { places, pins, positional }: Unknown): string {
     const instances = places.size === 1 ? '1 instance' : `${places.size} instances`;
-    const names = [...pins].map((pin) => this.#texts.text(pin)).join(', ');
+    const names = listed([...pins].map((pin) => this.#texts.text(pin)));
     const named = pins.size === 0 ? '' : `, pins ${names}`;
     const placed = positional === 0 ? '' : `, ${positional} pins by position`;
-    return `module ${this.#texts.text(name)} (${instances}${named}${placed})`;
+    const text = this.#texts.text(name);
+    const hint = hintOf(text, this.#texts.definitionNames());
+    return `module ${text} (${instances}${named}${placed}${hint})`;
   }
 }

@@ -82,6 +82,8 @@ export function usageOf(
     countDriver(recording, driver, usage);
     forEachFanin(recording, driver, (net) => usage.read(net));
   }
+  for (const net of recording.writtenNets()) usage.read(net);
+  for (const { reads } of recording.tables) for (const net of reads) usage.read(net);
   for (let child = 0; child < children.count; child++) {
     const template = templates[children.template(child)]!;
     const { drives, reads } = template;

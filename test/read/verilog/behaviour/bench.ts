@@ -13,6 +13,7 @@ import {
   lowerInitial,
   lowerTarget,
 } from '../../../../compiler/read/verilog/behaviour/index.js';
+import { Budget } from '../../../../compiler/read/verilog/budget.js';
 import { parseVerilog } from '../../../../compiler/read/verilog/parse.js';
 import type { Binding, Elaboration, Scope } from '../../../../compiler/read/verilog/scope.js';
 import type {
@@ -69,6 +70,7 @@ export function bench(items: string): Bench {
     names: syntax.names,
     sources,
     diagnostics,
+    budget: new Budget(),
     initialValues: new Map(),
   };
   const scope = new ModuleScope(shared);
@@ -120,7 +122,8 @@ function declareSignals(item: DeclarationItem, scope: ModuleScope, builder: Circ
       const low = Math.min(bounds.msb, bounds.lsb);
       const high = Math.max(bounds.msb, bounds.lsb);
       const words = Array.from({ length: high - low + 1 }, word);
-      const shape = { name, msb, lsb, signed, isVariable, low, high, words };
+      const indices = [{ low, high }];
+      const shape = { name, msb, lsb, signed, isVariable, indices, words };
       scope.names.set(name, { kind: 'memory', ...shape });
       continue;
     }
@@ -179,7 +182,8 @@ export function constantOf(text: string, items = '') {
   const syntax = parseVerilog([source], {}, sources, diagnostics);
   const builder = new CircuitBuilder();
   const { names } = syntax;
-  const shared = { builder, names, sources, diagnostics, initialValues: new Map() };
+  const budget = new Budget();
+  const shared = { builder, names, sources, diagnostics, budget, initialValues: new Map() };
   const scope = new ModuleScope(shared);
   for (const item of syntax.modules[0]!.items) declare(item, scope, builder);
   const binding = scope.resolve([names.internText('P')]);

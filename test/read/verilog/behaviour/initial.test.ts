@@ -78,7 +78,7 @@ describe('an initial block', () => {
     ['w = 1;', 'target-invalid', 'w'],
     ['forever q = ~q;', 'not-supported', ''],
     ['q = @(posedge w) 1;', 'not-supported', ''],
-    ['$readmemb("rom.txt", q);', 'not-supported', '$readmemb("rom.txt", q);'],
+    ['$readmemb("rom.txt", q);', 'target-invalid', 'q'],
   ])('is refused: %s', (text, code, at) => {
     const problems = problemsOf(`wire w; reg q; initial begin ${text} end`);
     expect(problems.map((problem) => [problem.code, problem.at])).toEqual([[code, at]]);

@@ -87,9 +87,9 @@ describe('a memory', () => {
     ['m = q;', 'target-invalid', 'm'],
     ['q = m[1][9];', 'select-outside', 'm[1][9]'],
     ['m[-1] = q;', 'select-outside', 'm[-1]'],
-  ])('of 8192 bits: %s gives %s at the place', (text, code, at) => {
+  ])('of 131072 bits: %s gives %s at the place', (text, code, at) => {
     const problems = problemsOf(
-      `input [9:0] a; reg [7:0] m [0:1023]; reg [7:0] q; always @* begin q = 0; ${text} end`,
+      `input [13:0] a; reg [7:0] m [0:16383]; reg [7:0] q; always @* begin q = 0; ${text} end`,
     );
     expect(problems.map((problem) => [problem.code, problem.at])).toContainEqual([code, at]);
   });

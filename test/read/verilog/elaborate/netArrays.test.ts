@@ -47,13 +47,17 @@ describe('an array of nets', () => {
   });
 
   it('names the words that have no driver, or several', () => {
-    const { diagnostics } = reading(`module t (input a, output y);
-      wire [1:0] w [0:2];
-      assign w[0] = a, w[1] = a, w[1][0] = a, y = w[2][1];
-    endmodule`);
-    expect(diagnostics.list.map(({ code, message }) => `${code}: ${message}`)).toEqual([
-      'net-multiply-driven: w[1][0] has 2 drivers; leave one of them',
+    const messages = (assigned: string) =>
+      reading(`module t (input a, output y);
+        wire [1:0] w [0:2];
+        assign ${assigned};
+      endmodule`).diagnostics.list.map(({ code, message }) => `${code}: ${message}`);
+    expect(messages('w[0] = a, w[1] = a, y = w[2][1]')).toEqual([
       'net-undriven: w[2][1] is read but has no driver',
+    ]);
+    // Where there is an error, what has no driver may well be its fault.
+    expect(messages('w[0] = a, w[1] = a, w[1][0] = a, y = w[2][1]')).toEqual([
+      'net-multiply-driven: w[1][0] has 2 drivers; leave one of them',
     ]);
   });
 

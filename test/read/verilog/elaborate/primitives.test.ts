@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { Circuit } from '../../../../compiler/circuit/circuit.js';
 import { Edge, Priority } from '../../../../compiler/circuit/circuit.js';
+import { findClockPorts } from '../../../../compiler/circuit/clockPorts.js';
 import { NO_NET } from '../../../../compiler/circuit/ids.js';
 import { circuitOf, evaluate, gatesOf, netsOf, reading, signalValue } from './reading.js';
 
@@ -46,7 +47,8 @@ describe('combinational primitives', () => {
     ['a, b', '0 0 : 0; 1 1 : 0; 0 1 : 1; 1 0 : 1;', '0110', ['xor']],
     ['a, b', '0 ? : 1; ? 0 : 1; 1 1 : 0;', '1110', undefined],
     ['a, b, c', '1 1 ? : 1; 1 ? 1 : 1; ? 1 1 : 1; 0 0 ? : 0;', '00010111', undefined],
-    ['a, b, c', 'b b b : 1;', '11111111', []],
+    ['a, b, c', '? ? ? : 1;', '11111111', []],
+    ['a, b, c', 'b b b : 1;', '11111111', ['or']],
     ['a, b', '1 0 : 1; 0 ? : x;', '0010', undefined],
     ['a', '0 : 1; 1 : 0;', '10', ['not']],
     ['a', '0 : 0; 1 : 1;', '01', ['buf']],
@@ -186,26 +188,50 @@ describe('sequential primitives', () => {
     [
       'both edges',
       'r 0 : ? : 0; r 1 : ? : 1; f 0 : ? : 0; f 1 : ? : 1; ? * : ? : -;',
-      'both edges of c',
+      'both edges of c give it a new value. It runs from its table',
     ],
     [
       'two clocks',
       'r 0 : ? : 0; n ? : ? : -; ? r : ? : 1; ? n : ? : -; r 1 : ? : -;',
-      'edges of c, d',
+      'edges of c, d give it a new value. It runs from its table',
     ],
     [
       'no row for a change of the data',
       'r 0 : ? : 0; r 1 : ? : 1; f ? : ? : -;',
-      'a change of d alone',
+      'a change of d alone makes its output change or x. It runs from its table; what',
     ],
     ['a value that swings', '1 ? : 0 : 1; 1 ? : 1 : 0; 0 ? : ? : -;', 'edges of c'],
     ['a value that depends on order', '* 0 : ? : -; ? r : ? : 1; 1 1 : ? : 1; 0 n : ? : -;', ''],
-  ])('with %s are refused', (_, rows, reason) => {
+  ])('with %s run from their table', (_, rows, reason) => {
     const { diagnostics, problems } = reading(using(primitive('c, d', rows, true), 'c, d'));
-    expect(problems.filter((problem) => !problem.startsWith('net-undriven'))).toEqual([
-      'not-supported p@1',
-    ]);
+    expect(problems).toEqual(['table-run p@1']);
     expect(diagnostics.list[0]!.message).toContain(reason);
+  });
+
+  it('on both edges hang on their clock as registers do', () => {
+    const rows = 'r 0 : ? : 0; r 1 : ? : 1; f 0 : ? : 0; f 1 : ? : 1; ? * : ? : -;';
+    const circuit = reading(using(primitive('c, d', rows, true), 'c, d')).circuit!;
+    expect(circuit.registers.clock[0]).toBe(netsOf(circuit, 'c')[0]);
+    expect(circuit.registers.data[0]).toBe(netsOf(circuit, 'd')[0]);
+    expect(findClockPorts(circuit).ports).toMatchObject([{ name: 'c', inactive: 0 }]);
+  });
+
+  it('with two clocks have both of them found', () => {
+    const rows = `r 0 ? ? : ? : 0; r 1 ? ? : ? : 1; ? ? f 0 : ? : 0; ? ? f 1 : ? : 1;
+      n ? ? ? : ? : -; ? * ? ? : ? : -; ? ? p ? : ? : -; ? ? ? * : ? : -;`;
+    const inputs = 'a, b, c, d';
+    const circuit = reading(using(primitive(inputs, rows, true), inputs)).circuit!;
+    expect(findClockPorts(circuit).ports).toMatchObject([
+      { name: 'a', inactive: 0 },
+      { name: 'c', inactive: 1 },
+    ]);
+  });
+
+  it('whose edges set and clear alone have no clock', () => {
+    const rows = '1 0 : ? : 1; f 0 : 1 : -; 0 r : ? : 0; 0 f : 0 : -; 1 1 : ? : 0;';
+    const circuit = reading(using(primitive('s, r', rows, true), 's, r')).circuit!;
+    expect([circuit.registers.count, circuit.latches.count]).toEqual([0, 1]);
+    expect(findClockPorts(circuit).ports).toEqual([]);
   });
 
   it('of too many inputs are refused', () => {

@@ -29,17 +29,17 @@ describe('the choice of the top', () => {
 
   it('says so where each module is instantiated', () => {
     const text = 'module a; b u (); endmodule module b; a u (); endmodule';
-    expect(problemsOf(text)).toEqual(['top-ambiguous']);
+    expect(problemsOf(text)).toEqual(['top-ambiguous @1']);
     expect(problemsOf(text, 'a')).toEqual(['module-recursive a@1']);
   });
 
   it('lists what there is where the name is unknown', () => {
-    expect(problemsOf(`${inverter}module t; endmodule`, 'top')).toEqual(['top-unknown']);
+    expect(problemsOf(`${inverter}module t; endmodule`, 'top')).toEqual(['top-unknown @1']);
     expect(messageOf(`${inverter}module t; endmodule`, 'top')).toContain('there is inv, t');
   });
 
   it('reports a text without module', () => {
-    expect(problemsOf('')).toEqual(['top-unknown']);
+    expect(problemsOf('')).toEqual(['top-unknown @1']);
   });
 });
 
@@ -87,7 +87,7 @@ describe('connections', () => {
 
   it('to a port that the module lacks are reported', () => {
     const text = t('inv u (.a(a[0]), .q(y[0]), .y(y[1])); assign y[0] = 0;');
-    expect(problemsOf(text)).toEqual(['port-unknown y@3']);
+    expect(problemsOf(text)).toEqual(['port-unknown q@3']);
     expect(messageOf(text)).toBe('inv has no port q; it has a, y');
   });
 
@@ -148,8 +148,8 @@ describe('names', () => {
   });
 
   it.each([
-    ['an instance', 'wire n; inv n (a, y);', 'name-redeclared inv@2'],
-    ['a gate', 'wire n; not n (y, a);', 'name-redeclared not@2'],
+    ['an instance', 'wire n; inv n (a, y);', 'name-redeclared n@2'],
+    ['a gate', 'wire n; not n (y, a);', 'name-redeclared n@2'],
     ['two instances', 'inv u (a, y), u (a, n);', 'name-redeclared u@2'],
     ['a parameter', 'parameter y = 1; inv u (a, y);', 'name-redeclared y = 1@2'],
     ['a task', 'task y; input a; ; endtask', 'name-redeclared task y; input a; ; endtask@2'],
@@ -191,7 +191,7 @@ describe('names', () => {
   it('of parameters that a module lacks are reported', () => {
     const module = 'module m #(parameter P = 1) (input a); endmodule\n';
     const t = (item: string): string => `${module}module t (input a);\n${item} endmodule`;
-    expect(problemsOf(t('m #(.Q(2)) u (a);'))).toEqual(['name-undeclared 2@3']);
+    expect(problemsOf(t('m #(.Q(2)) u (a);'))).toEqual(['name-undeclared Q@3']);
     expect(messageOf(t('m #(.Q(2)) u (a);'))).toBe('module m has no parameter Q; it has P');
     expect(problemsOf(t('m #(1, 2) u (a);'))).toEqual(['port-count 2@3']);
     expect(problemsOf(t('m u (a); defparam u.Q = 2;'))).toEqual(['name-undeclared m@3']);
@@ -359,9 +359,13 @@ describe('generate constructs', () => {
 });
 
 describe('arrays', () => {
-  it('of several dimensions or too many bits are refused', () => {
+  it('of too many bits or indices are refused', () => {
     const t = (item: string): string => `module t (input a);\n${item} endmodule`;
-    expect(problemsOf(t('reg m [0:1][0:1];'))).toEqual(['not-supported m@2']);
-    expect(problemsOf(t('reg [63:0] m [0:99999];'))).toEqual(['not-supported m@2']);
+    expect(problemsOf(t('reg m [0:1][0:1];'))).toEqual([]);
+    expect(problemsOf(t('reg [63:0] m [0:99999];'))).toEqual([]);
+    expect(problemsOf(t('reg [63:0] m [0:9999999];'))).toEqual(['not-supported m@2']);
+    expect(problemsOf(t('wire [63:0] m [0:99999];'))).toEqual(['not-supported m@2']);
+    const indices = '[0:2]'.repeat(16);
+    expect(problemsOf(t(`reg m ${indices};`))).toEqual(['not-supported m@2']);
   });
 });
