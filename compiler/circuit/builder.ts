@@ -12,7 +12,11 @@ import {
   primaryNames,
 } from './hierarchy.js';
 import { type NetId, NO_NET, netId } from './ids.js';
+import type { MemoryShape } from './memory.js';
+import { MemoryTable, type WritePins } from './memoryTable.js';
 import { type LatchPins, PinTable, type RegisterPins } from './pinTable.js';
+import type { CellTable } from './tables/cellTable.js';
+import { TableColumns } from './tables/tableColumns.js';
 
 export type { LatchPins, RegisterPins } from './pinTable.js';
 
@@ -45,6 +49,8 @@ export class CircuitBuilder {
   readonly #outputs: Port[] = [];
   readonly #registers = new PinTable();
   readonly #latches = new PinTable();
+  readonly #memories = new MemoryTable();
+  readonly #tables = new TableColumns();
   readonly #sources: Source[] = [];
   readonly #checks: Omit<BusCheck, 'name'>[] = [];
   readonly #netTypes = new Map<NetId, NetType>();
@@ -112,9 +118,10 @@ export class CircuitBuilder {
 
   /**
    * Drives a net by a gate or a constant. A second driver of a net drives a new net instead, and
-   * is put on record in `extraDrivers`. Throws RangeError for a wrong number of fan-in nets.
+   * is put on record in `extraDrivers`. Returns the net that is driven. Throws RangeError for a
+   * wrong number of fan-in nets.
    */
-  drive(net: NetId, kind: GateKind, fanin: readonly NetId[]): void {
+  drive(net: NetId, kind: GateKind, fanin: readonly NetId[]): NetId {
     const { minFanin, maxFanin, name } = gateInfo(kind);
     if (fanin.length < minFanin || fanin.length > maxFanin) {
       throw new RangeError(`${name} takes ${minFanin} to ${maxFanin} inputs, got ${fanin.length}`);
@@ -123,6 +130,7 @@ export class CircuitBuilder {
     this.#driverStart.set(driven, this.#fanin.length);
     this.#driverCount.set(driven, fanin.length);
     for (const source of fanin) this.#fanin.push(source);
+    return driven;
   }
 
   /** A new net driven by a gate or a constant. */
@@ -148,16 +156,51 @@ export class CircuitBuilder {
     return [...this.#inputs, ...this.#outputs].map(({ name }) => name);
   }
 
-  /** Adds a register that drives `pins.output`. Edge is rising unless given. */
-  register(pins: RegisterPins): void {
+  /** Adds a register that drives `pins.output`, as `drive` does. Edge is rising unless given. */
+  register(pins: RegisterPins): NetId {
     const output = this.#claim(pins.output, GateKind.Register);
     this.#registers.add(pins, output, pins.clock, pins.edge ?? Edge.Rising);
+    return output;
   }
 
-  /** Adds a latch that drives `pins.output`. */
-  latch(pins: LatchPins): void {
+  /** Adds a latch that drives `pins.output`, as `drive` does. */
+  latch(pins: LatchPins): NetId {
     const output = this.#claim(pins.output, GateKind.Latch);
     this.#latches.add(pins, output, pins.enable ?? NO_NET, Edge.Rising);
+    return output;
+  }
+
+  /** Adds the table of a cell whose gate, register or latch drives `output`. */
+  table(output: NetId, inputs: readonly NetId[], table: CellTable): void {
+    this.#tables.add(output, inputs, table);
+  }
+
+  /** Adds a memory without ports; returns its number. */
+  memory(shape: MemoryShape): number {
+    return this.#memories.add(shape);
+  }
+
+  /**
+   * Adds a port of a memory that reads the word at `address` into `data`, `NO_NET` for a bit that
+   * nobody reads. Throws RangeError for a wrong number of nets.
+   */
+  readPort(memory: number, address: readonly NetId[], data: readonly NetId[]): void {
+    const driven = data.map((net) =>
+      net === NO_NET ? NO_NET : this.drive(net, GateKind.MemoryRead, address),
+    );
+    this.#memories.read(memory, address, driven);
+  }
+
+  /** Adds a port that reads the word at `address`; returns its data nets, which are new. */
+  readMemory(memory: number, address: readonly NetId[]): NetId[] {
+    const data = Array.from({ length: this.#memories.widthOf(memory) }, () => this.net());
+    this.readPort(memory, address, data);
+    return data;
+  }
+
+  /** Adds a port that writes after those before. Edge is rising unless given. */
+  writeMemory(memory: number, pins: WritePins): void {
+    this.#memories.write(memory, pins, pins.edge ?? Edge.Rising);
   }
 
   /**
@@ -210,6 +253,8 @@ export class CircuitBuilder {
     }
     this.#registers.moveOutputs(moved);
     this.#latches.moveOutputs(moved);
+    this.#memories.moveOutputs(moved);
+    this.#tables.moveOutputs(moved);
     return [...moved.values()];
   }
 
@@ -220,6 +265,8 @@ export class CircuitBuilder {
     for (const { nets } of this.#outputs) for (const net of nets) isRead[net] = 1;
     this.#registers.markReads(isRead);
     this.#latches.markReads(isRead);
+    this.#memories.markReads(isRead);
+    this.#tables.markReads(isRead);
     return isRead;
   }
 
@@ -261,6 +308,8 @@ export class CircuitBuilder {
       outputs: this.#outputs,
       registers: this.#registers.registers(),
       latches: this.#latches.latches(),
+      memories: this.#memories.take(),
+      tables: this.#tables.take(),
       hierarchy,
       checks: this.#namedChecks(hierarchy, netCount),
       sources: this.#sources,

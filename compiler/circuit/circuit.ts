@@ -1,5 +1,7 @@
 import type { Source } from '../diagnostics/source.js';
 import type { Hierarchy } from './hierarchy.js';
+import type { Memory } from './memory.js';
+import type { Tables } from './tables/tableColumns.js';
 
 /** A port of the top module. `nets[0]` is its rightmost (least significant) bit. */
 export interface Port {
@@ -92,6 +94,10 @@ export interface Circuit {
   readonly outputs: readonly Port[];
   readonly registers: Registers;
   readonly latches: Latches;
+  /** Words that are held as a memory; small memories may be registers instead. */
+  readonly memories: readonly Memory[];
+  /** Cells that are told by a table, exactly, where two or three values need it. */
+  readonly tables: Tables;
   readonly hierarchy: Hierarchy;
   /** One or two for each bus whose drivers can disagree or be off; empty without buses. */
   readonly checks: readonly BusCheck[];

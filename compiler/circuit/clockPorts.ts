@@ -6,6 +6,7 @@ import { GateKind, isGate } from './gates.js';
 import { declaredIndex, netName, primaryNames } from './hierarchy.js';
 import { type NetId, NO_NET, netId } from './ids.js';
 import { gateReaders, type Readers } from './readers.js';
+import { capturingPins } from './tables/tableClocks.js';
 
 /** An input bit that ticks by itself. */
 export interface ClockPort {
@@ -98,12 +99,13 @@ function bitNamed(bits: readonly InputBit[], name: string): NetId {
 }
 
 function inactiveLevel(circuit: Circuit, direct: Uint32Array, clock: NetId): 0 | 1 {
-  const { registers, latches } = circuit;
+  const { latches } = circuit;
+  const pins = capturingPins(circuit);
   let stored = 0;
-  for (let i = 0; i < registers.count; i++) {
-    const source = direct[registers.clock[i]!]!;
+  for (let i = 0; i < pins.clock.length; i++) {
+    const source = direct[pins.clock[i]!]!;
     if (source >>> 1 !== clock) continue;
-    if ((registers.edge[i] === Edge.Falling) === ((source & INVERTED) !== 0)) return 0;
+    if ((pins.edge[i] === Edge.Falling) === ((source & INVERTED) !== 0)) return 0;
     stored++;
   }
   for (let i = 0; i < latches.count; i++) {
@@ -121,6 +123,7 @@ class ClockSearch {
   readonly #direct: Uint32Array;
   readonly #bits: readonly InputBit[];
   readonly #readers: Readers;
+  readonly #clockPins: Uint32Array;
   readonly #isClock: Uint8Array;
   /** 1 for nets in front of a register's clock pin, through gates. */
   readonly #inFront: Uint8Array;
@@ -133,7 +136,8 @@ class ClockSearch {
     this.#bits = bits;
     this.#readers = gateReaders(circuit);
     this.#isClock = new Uint8Array(circuit.netCount);
-    this.#inFront = coneOf(circuit, circuit.registers.clock);
+    this.#clockPins = capturingPins(circuit).clock;
+    this.#inFront = coneOf(circuit, this.#clockPins);
     this.#clocked = new Uint8Array(circuit.netCount);
   }
 
@@ -153,10 +157,10 @@ class ClockSearch {
   /** Returns the names of those that were taken for want of anything better. */
   run(): string[] {
     const { registers, latches } = this.#circuit;
-    const byRegister = this.#directlyReached(registers.clock);
+    const byRegister = this.#directlyReached(this.#clockPins);
     const byLatch = this.#directlyReached(latches.enable);
     for (const { name, net } of this.#bits) {
-      const besideLatch = registers.count === 0 || this.#inFront[net] === 1;
+      const besideLatch = this.#clockPins.length === 0 || this.#inFront[net] === 1;
       const enablesLatch = byLatch[net] === 1 && besideLatch && isClockName(name);
       if (byRegister[net] === 1 || enablesLatch) this.accept(net);
     }
@@ -171,7 +175,7 @@ class ClockSearch {
   /** Takes inputs in front of the clock pins that are neither clocked yet nor in `derived`. */
   #acceptBefore(derived: Uint8Array, suits: (bit: InputBit) => boolean): string[] {
     const isOpen = (pin: number) => this.#clocked[pin] === 0 && derived[pin] === 0;
-    const cone = coneOf(this.#circuit, this.#circuit.registers.clock.filter(isOpen));
+    const cone = coneOf(this.#circuit, this.#clockPins.filter(isOpen));
     const taken = this.#bits.filter((bit) => cone[bit.net] === 1 && suits(bit));
     for (const { net } of taken) this.accept(net);
     return taken.map((bit) => bit.name);

@@ -34,6 +34,10 @@ export interface ClockSchedule {
   readonly shapes: readonly CycleShape[];
   /** Which of them each cycle of the pattern is; after the last comes the first again. */
   readonly pattern: Uint8Array;
+  /** When each clock of `ClockPorts.ports` ticks; absent where all tick together. */
+  readonly timings?: readonly ClockTiming[];
+  /** The timing of the base clock, likewise. */
+  readonly base?: ClockTiming;
 }
 
 /** Cycles in a pattern, and different ones among them, beyond which a schedule is refused. */
@@ -82,7 +86,12 @@ export function timedSchedule(clocks: ClockPorts, timings: readonly ClockTiming[
     }
     pattern[cycle] = known.index;
   }
-  return { shapes: [...shapes.values()].map(({ shape }) => shape), pattern };
+  return {
+    shapes: [...shapes.values()].map(({ shape }) => shape),
+    pattern,
+    timings: byClock,
+    base,
+  };
 }
 
 function timingOf(name: string, timings: readonly ClockTiming[]): ClockTiming {

@@ -25,7 +25,7 @@ export function directSources(circuit: Circuit): Uint32Array {
       known[net] = 1;
       source[net] = kind[net] === GateKind.Input ? net * 2 : NOT_DIRECT;
       const start = faninStart[net]!;
-      if (faninStart[net + 1]! - start !== 1) break;
+      if (faninStart[net + 1]! - start !== 1 || kind[net] === GateKind.MemoryRead) break;
       path.push(net);
       net = fanin[start]!;
     }

@@ -24,6 +24,8 @@ export const GateKind = {
   Xnor: 13,
   /** Two-way multiplexer: fan-in is (select, value for 0, value for 1). */
   Mux: 14,
+  /** Bit of a word that a memory port reads, see `Memory`; its fan-in is the port's address. */
+  MemoryRead: 15,
 } as const;
 
 /** One of the numbers in the table `GateKind`. */
@@ -32,14 +34,17 @@ export type GateKind = (typeof GateKind)[keyof typeof GateKind];
 /** All that the rest of the compiler needs to know about one kind of driver. */
 export interface GateInfo {
   readonly name: string;
-  /** `gate`: a function of its fan-in; `constant`; `source`: its value comes from elsewhere. */
-  readonly role: 'constant' | 'source' | 'gate';
+  /**
+   * `gate`: a function of its fan-in; `memory`: of its fan-in and of what a memory holds;
+   * `constant`; `source`: its value comes from elsewhere.
+   */
+  readonly role: 'constant' | 'source' | 'gate' | 'memory';
   /** Smallest and largest number of fan-in nets. */
   readonly minFanin: number;
   readonly maxFanin: number;
   /**
    * For kinds that fold a two-input operation over the fan-in: the operation, and whether the
-   * result is inverted. Absent for the multiplexer and for kinds that are no gates.
+   * result is inverted. Absent for the multiplexer, reading and kinds that are no gates.
    */
   readonly fold?: { readonly operation: 'and' | 'or' | 'xor'; readonly inverted: boolean };
 }
@@ -72,9 +77,13 @@ export const gateTable: Readonly<Record<GateKind, GateInfo>> = {
   [GateKind.Xor]: folding('xor', 'xor', false),
   [GateKind.Xnor]: folding('xnor', 'xor', true),
   [GateKind.Mux]: { name: 'mux', role: 'gate', minFanin: 3, maxFanin: 3 },
+  [GateKind.MemoryRead]: { name: 'memoryRead', role: 'memory', minFanin: 1, maxFanin: UNBOUNDED },
 };
 
-/** Whether a kind computes its net from other nets (as against constants and sources). */
+/**
+ * Whether a kind computes its net from other nets (as against constants and sources): gates, and
+ * what memory ports read.
+ */
 export const isGate = (kind: number): boolean => kind >= GateKind.Buf;
 
 /** The table row of a kind read from a typed array. */

@@ -1,3 +1,5 @@
+const LONG = 4096;
+
 /** A list of unsigned 32-bit numbers that grows in place: four bytes an entry, no objects. */
 export class GrowableUint32 {
   #data: Uint32Array;
@@ -40,6 +42,12 @@ export class GrowableUint32 {
     const data = this.#data;
     for (let i = 0, to = this.#length; i < count; i++) data[to++] = values[i]!;
     this.#length = end;
+  }
+
+  /** Forgets all entries, and the room of a list that had become long. */
+  clear(): void {
+    if (this.#data.length > LONG) this.#data = new Uint32Array(64);
+    this.#length = 0;
   }
 
   /** The entries so far, as an array of just that length; the list must not be used afterwards. */

@@ -108,14 +108,21 @@ export class HierarchyBuilder {
 
   /**
    * Adds an instance of a module. `nets` has one net for each bit of the module's signals, in the
-   * order of `Signal.offset`; `name` is a text or a number of the source. Returns the scope's index.
+   * order of `Signal.offset`, `count` in all; `name` is a text or a number of the source. Returns
+   * the scope's index.
    */
-  addScope(name: string | number, parent: number, module: number, nets: ArrayLike<number>): number {
+  addScope(
+    name: string | number,
+    parent: number,
+    module: number,
+    nets: ArrayLike<number>,
+    count = nets.length,
+  ): number {
     const scope = this.#names.push(name);
     this.#parent.push(parent);
     this.#module.push(module);
     this.#start.push(this.#netOf.length);
-    this.#netOf.append(nets, nets.length);
+    this.#netOf.append(nets, count);
     return scope;
   }
 

@@ -1,12 +1,14 @@
 import type { Circuit } from './circuit.js';
 import { GateKind, isGate } from './gates.js';
 import { NO_NET } from './ids.js';
+import { memoryPins } from './memoryPorts.js';
+import { eachSettler } from './tables/settlers.js';
 import { TarjanSearch } from './tarjan.js';
 
 /**
  * The combinational loops of a circuit: sets of nets that depend on one another without a clock
  * edge between. Latches count as transparent, and the asynchronous set and reset of a register
- * reach its output.
+ * reach its output, but for those of `delayed` registers, which break what would be loops.
  *
  * A loop settles in rounds: its nets are evaluated one after another, round after round until a
  * round changes nothing, starting from the values that they had before. Of these, only the `kept`
@@ -21,6 +23,11 @@ export interface Loops {
   readonly nets: readonly Uint32Array[];
   /** Of each loop, the gates that one of its nets reads before they are evaluated. */
   readonly kept: readonly Uint32Array[];
+  /**
+   * Per register a 1 where it has a say in its own set or reset: these act on it in waves, as clock
+   * edges do, so that others see the pulse that it gives.
+   */
+  readonly delayed: Uint8Array;
 }
 
 /** Rounds in which a loop of so many nets must settle; one that does not is said to oscillate. */
@@ -35,19 +42,43 @@ export function loopsOf(circuit: Circuit): Loops {
   return loops;
 }
 
+/**
+ * Lets a circuit that differs from another in its output ports alone settle its loops in the same
+ * order: what else is looked at must not change what a loop does, nor what it remembers.
+ */
+export function shareLoops(from: Circuit, to: Circuit): void {
+  known.set(to, loopsOf(from));
+}
+
 // Strongly connected components of the settling logic.
 function findLoops(circuit: Circuit): Loops {
-  const sources = new SettlingSources(circuit);
+  const { sources, delayed, components } = brokenUp(circuit);
   const reads = readCounts(circuit);
-  const nets = new TarjanSearch(circuit.netCount, (net, i) => sources.at(net, i))
-    .components()
-    .map((component) => settlingOrder(sources, component, reads));
+  const nets = components.map((component) => settlingOrder(sources, component, reads));
   const loopOf = new Int32Array(circuit.netCount).fill(-1);
   nets.forEach((members, loop) => {
     for (const net of members) loopOf[net] = loop;
   });
   const kept = nets.map((members) => keptNets(circuit, sources, loopOf, members));
-  return { keptNets: Uint32Array.from(kept.flatMap((each) => [...each])), loopOf, nets, kept };
+  const all = Uint32Array.from(kept.flatMap((each) => [...each]));
+  return { keptNets: all, loopOf, nets, kept, delayed };
+}
+
+// Registers in a component are there by their set or reset: they are taken out of it.
+function brokenUp(circuit: Circuit) {
+  const { registers, netCount, kind } = circuit;
+  const delayed = new Uint8Array(registers.count);
+  const search = (sources: SettlingSources) =>
+    new TarjanSearch(netCount, (net, i) => sources.at(net, i)).components();
+  const whole = new SettlingSources(circuit, delayed);
+  const components = search(whole);
+  const looping = new Set(
+    components.flatMap((nets) => nets.filter((net) => kind[net] === GateKind.Register)),
+  );
+  if (looping.size === 0) return { sources: whole, delayed, components };
+  for (let r = 0; r < delayed.length; r++) if (looping.has(registers.output[r]!)) delayed[r] = 1;
+  const sources = new SettlingSources(circuit, delayed);
+  return { sources, delayed, components: search(sources) };
 }
 
 function keptNets(
@@ -95,12 +126,14 @@ function settlingOrder(
   return Uint32Array.from(order);
 }
 
-/** How often each net is read: by gates, by pins of registers and latches, and by output ports. */
-function readCounts({ netCount, fanin, registers, latches, outputs }: Circuit): Uint32Array {
+/** How often each net is read: by gates, by pins of state elements, and by output ports. */
+function readCounts(circuit: Circuit): Uint32Array {
+  const { netCount, fanin, registers, latches, outputs } = circuit;
   const counts = new Uint32Array(netCount);
   const pins = [registers.clock, registers.data, registers.set, registers.reset];
   const latchPins = [latches.enable, latches.data, latches.set, latches.reset];
-  for (const nets of [fanin, ...pins, ...latchPins, ...outputs.map((port) => port.nets)]) {
+  const statePins = [...pins, ...latchPins, memoryPins(circuit)];
+  for (const nets of [fanin, ...statePins, ...outputs.map((port) => port.nets)]) {
     for (const net of nets) if (net !== NO_NET) counts[net]!++;
   }
   return counts;
@@ -111,24 +144,32 @@ export class SettlingSources {
   readonly #circuit: Circuit;
   readonly #pins = new Map<number, number[]>();
 
-  constructor(circuit: Circuit) {
+  /** `delayed` as in `Loops`. */
+  constructor(circuit: Circuit, delayed = loopsOf(circuit).delayed) {
     this.#circuit = circuit;
     const { registers, latches } = circuit;
+    const cut = new Set<number>();
     for (let r = 0; r < registers.count; r++) {
-      this.#addPins(registers.output[r]!, [registers.set[r]!, registers.reset[r]!]);
+      if (delayed[r] === 1) cut.add(registers.output[r]!);
+      else this.#addPins(registers.output[r]!, [registers.set[r]!, registers.reset[r]!]);
     }
     const { enable, data, set, reset } = latches;
     for (let l = 0; l < latches.count; l++) {
       this.#addPins(latches.output[l]!, [enable[l]!, data[l]!, set[l]!, reset[l]!]);
     }
+    eachSettler(circuit, (output, nets) => {
+      if (!cut.has(output)) this.#addPins(output, nets);
+    });
   }
 
   /** The i-th net that a net depends on, or -1 past the last. */
   at(net: number, i: number): number {
-    const { kind, faninStart, fanin } = this.#circuit;
+    const { kind, faninStart, fanin, tables } = this.#circuit;
     if (isGate(kind[net]!)) {
       const at = faninStart[net]! + i;
-      return at < faninStart[net + 1]! ? fanin[at]! : -1;
+      if (at < faninStart[net + 1]!) return fanin[at]!;
+      if (tables.count === 0) return -1;
+      return this.#pins.get(net)?.[at - faninStart[net + 1]!] ?? -1;
     }
     if (kind[net] !== GateKind.Register && kind[net] !== GateKind.Latch) return -1;
     return this.#pins.get(net)?.[i] ?? -1;
@@ -136,6 +177,6 @@ export class SettlingSources {
 
   #addPins(output: number, candidates: readonly number[]): void {
     const wired = candidates.filter((net) => net !== NO_NET);
-    if (wired.length > 0) this.#pins.set(output, wired);
+    if (wired.length > 0) this.#pins.set(output, [...(this.#pins.get(output) ?? []), ...wired]);
   }
 }

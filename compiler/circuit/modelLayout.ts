@@ -26,6 +26,7 @@ export function modelLayout(
     inputs: layRow(dataPorts.map(portShape)),
     outputs: layRow(circuit.outputs.map(portShape)),
     stateNames: Array.from(stateNets(circuit), (net) => netName(circuit.hierarchy, names, net)),
+    memories: circuit.memories.map(({ name, width, depth }) => ({ name, width, depth })),
   };
 }
 

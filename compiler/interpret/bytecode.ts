@@ -1,4 +1,4 @@
-import { firstResult, operandCount, type Program } from '../program/program.js';
+import { firstResult, operandCount, type Program, ProgramOp } from '../program/program.js';
 
 /**
  * The operations of a program, reordered so that equal ones stand together, as far as each still
@@ -8,7 +8,10 @@ import { firstResult, operandCount, type Program } from '../program/program.js';
 export interface Bytecode {
   /** Pairs of numbers: a `ProgramOp`, and how many operations of that kind follow each other. */
   readonly runs: Uint32Array;
-  /** The operands of all operations in order, `operandCount` for each: values by new number. */
+  /**
+   * The operands of all operations in order, `operandCount` for each: values by new number; behind
+   * those of `Load` and `Bit` the plain number.
+   */
   readonly operands: Uint32Array;
   /** New number of each value of the program. Results are numbered in the new order. */
   readonly renumbered: Uint32Array;
@@ -22,16 +25,20 @@ export function bytecodeOf(program: Program): Bytecode {
   order.forEach((operation, place) => {
     renumbered[first + operation] = first + place;
   });
-  const count = program.op.reduce((sum, op) => sum + operandCount[op]!, 0);
+  const count = program.op.reduce((sum, op) => sum + operandCount[op]! + Number(hasPlain(op)), 0);
   const operands = new Uint32Array(count);
   let at = 0;
   for (const operation of order) {
     eachOperand(program, operation, (value) => {
       operands[at++] = renumbered[value]!;
     });
+    if (hasPlain(program.op[operation]!)) operands[at++] = program.c[operation]!;
   }
   return { runs: Uint32Array.from(runs), operands, renumbered };
 }
+
+// Words and their bits have a plain number behind their operands.
+const hasPlain = (op: number): boolean => op === ProgramOp.Load || op === ProgramOp.Bit;
 
 // The kind of which most operations are ready runs until none is left, those included that become
 // ready meanwhile: far fewer runs than going level by level.

@@ -8,6 +8,7 @@ import {
   ProgramOp,
 } from '../program/program.js';
 import { bytecodeOf } from './bytecode.js';
+import type { BytecodeMemory } from './bytecodeMemory.js';
 
 /** A program as bytecode, with the values it works on. */
 export class BytecodeProgram {
@@ -27,8 +28,10 @@ export class BytecodeProgram {
   readonly #single: Uint32Array;
   /** Per update: first state bit, the memory places of enable and gate, and of what is copied. */
   readonly #updates: Int32Array;
+  readonly #contents: BytecodeMemory;
+  readonly #writes: readonly (() => void)[];
 
-  constructor(program: Program) {
+  constructor(program: Program, contents: BytecodeMemory) {
     const { runs, operands, renumbered } = bytecodeOf(program);
     this.#program = program;
     this.#runs = runs;
@@ -48,6 +51,10 @@ export class BytecodeProgram {
         renumbered[gate]!,
         from < 0 ? -1 : firstState(program) + from,
       ]),
+    );
+    this.#contents = contents;
+    this.#writes = program.writes.map((write) =>
+      contents.writer(write, this.#memory, (value) => renumbered[value]!),
     );
   }
 
@@ -72,6 +79,8 @@ export class BytecodeProgram {
     this.#step();
     this.#checkFaults(cycle);
     if (response !== undefined) this.#packOutputs(response, to);
+    // What is written is read before the state changes.
+    for (const write of this.#writes) write();
     this.#commit();
   }
 
@@ -109,6 +118,12 @@ export class BytecodeProgram {
         case ProgramOp.Not:
           for (; result < end; result++, at++) memory[result] = memory[memory[at]!]! ^ 1;
           break;
+        case ProgramOp.Pack:
+        case ProgramOp.Load:
+        case ProgramOp.Bit:
+          at = this.#words(runs[run]!, at, result, end);
+          result = end;
+          break;
         default:
           // Without a branch, which would be mispredicted half the time.
           for (; result < end; result++, at += 3) {
@@ -118,6 +133,28 @@ export class BytecodeProgram {
           }
       }
     }
+  }
+
+  // Numbers, words and bits of words; returns where the next operands stand.
+  #words(op: number, first: number, from: number, end: number): number {
+    const memory = this.#memory;
+    const { bytes } = this.#contents;
+    let at = first;
+    for (let result = from; result < end; result++) {
+      const a = memory[memory[at]!]!;
+      if (op === ProgramOp.Pack) {
+        memory[result] = memory[memory[at + 1]!]! * 2 + a;
+        at += 2;
+      } else if (op === ProgramOp.Load) {
+        memory[result] = this.#contents.word(memory[at + 2]!, a, memory[memory[at + 1]!] !== 0);
+        at += 3;
+      } else {
+        const bit = memory[at + 1]!;
+        memory[result] = (bytes[a + (bit >>> 3)]! >>> (bit & 7)) & 1;
+        at += 2;
+      }
+    }
+    return at;
   }
 
   #packOutputs(response: Uint32Array, at: number): void {

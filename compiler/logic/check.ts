@@ -1,4 +1,4 @@
-import { type Logic, LogicOp, UPDATE_WIDTH } from './logic.js';
+import { FALSE, type Logic, LogicOp, UPDATE_WIDTH } from './logic.js';
 import { sinksOf } from './sinks.js';
 
 /**
@@ -21,6 +21,7 @@ export function checkLogic(logic: Logic): void {
     for (const column of operands) {
       if (column[node]! >>> 1 >= node) fail(node, `reads node ${column[node]! >>> 1}`);
     }
+    checkWord(logic, node, fail);
     if (kind === LogicOp.Xor && (a[node]! | b[node]!) & 1) fail(node, 'has an inverted operand');
     if (kind === LogicOp.Mux && a[node]! & 1) fail(node, 'has an inverted select');
   }
@@ -32,5 +33,29 @@ export function checkLogic(logic: Logic): void {
     if (first + UPDATE_WIDTH > states.length)
       fail(0, `an update goes beyond state ${states.length}`);
     if (from + UPDATE_WIDTH > states.length) fail(0, `an update copies from state ${from}`);
+  }
+}
+
+// Words and numbers are read by nodes of their kind alone, and these read nothing else.
+function checkWord(
+  { op, a, b, c }: Logic,
+  node: number,
+  fail: (node: number, what: string) => never,
+): void {
+  const kind = op[node]!;
+  const isWordy = (literal: number): boolean =>
+    op[literal >>> 1] === LogicOp.Pack || op[literal >>> 1] === LogicOp.Load;
+  const reads = (literal: number, wanted: number): boolean =>
+    literal === FALSE || (op[literal >>> 1] === wanted && (literal & 1) === 0);
+  if (kind === LogicOp.Pack) {
+    if (isWordy(a[node]!)) fail(node, 'takes a word for a bit');
+    if (!reads(b[node]!, LogicOp.Pack)) fail(node, 'continues no number');
+  } else if (kind === LogicOp.Load) {
+    if (!reads(a[node]!, LogicOp.Pack)) fail(node, 'has no number for an address');
+    if (isWordy(b[node]!)) fail(node, 'takes a word for a bit');
+  } else if (kind === LogicOp.Bit) {
+    if (op[a[node]! >>> 1] !== LogicOp.Load || b[node] !== FALSE) fail(node, 'reads no word');
+  } else if ([a[node]!, b[node]!, ...(kind === LogicOp.Mux ? [c[node]!] : [])].some(isWordy)) {
+    fail(node, 'takes a word for a bit');
   }
 }

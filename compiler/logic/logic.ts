@@ -12,6 +12,19 @@ export const LogicOp = {
   Xor: 4,
   /** `a` selects: `b` where it is 0, `c` where it is 1. */
   Mux: 5,
+  /** The whole number 2b + a: `a` is a bit, `b` such a number again, `FALSE` for 0. */
+  Pack: 6,
+  /**
+   * The word of memory number `c` at the address that the number `a` makes (its bits are those of a
+   * `ReadPort`, the first one lowest), as the memory was before the cycle. Where there is no such
+   * word, or `b` is 0, all its bits are x, or 0 in a two-valued graph.
+   */
+  Load: 7,
+  /**
+   * Bit number `c` of the bytes of the word `a`, which are those of `Engine.memoryState`; `b` is
+   * `FALSE`.
+   */
+  Bit: 8,
 } as const;
 
 /** A node and whether it is inverted: node * 2 + inverted. */
@@ -28,7 +41,8 @@ export const isInverted = (literal: Literal): boolean => (literal & 1) === 1;
  * One clock cycle as a Boolean function: from input and state bits to output bits and next state.
  *
  * Nodes are numbered so that operands come before their users. Operands `a`, `b`, `c` are literals
- * (for `Input` and `State`, `a` is a plain index). The graph knows 0 and 1 only; a three-valued
+ * (for `Input` and `State`, `a` is a plain index). `Pack` and `Load` give no bit: only nodes of
+ * their kind read them, and never inverted. The graph knows 0 and 1 only; a three-valued
  * circuit has two bits for each value (see `ThreeValued`).
  */
 export interface Logic {
@@ -45,10 +59,38 @@ export interface Logic {
   readonly states: readonly LogicState[];
   /** What sixteen neighbouring state bits each do in common; none before `groupRegisters`. */
   readonly updates: readonly StateUpdate[];
+  /** What is written to memories at the end of the cycle, one after another. */
+  readonly writes: readonly LogicWrite[];
   /**
    * Literals that must be 0: where one is 1 the cycle has no result, for the reason beside it.
    */
   readonly faults: readonly LogicFault[];
+}
+
+/**
+ * A word of a memory that is written: as a `WritePort` does, with all that it reads as of the end.
+ *
+ * A value that can be x is told as two literals, `…Unknown` and `…Surely` holding the second ones;
+ * a two-valued graph has these lists empty, and `surely` equal to `enable`.
+ */
+export interface LogicWrite {
+  /** Number of the memory. */
+  readonly memory: number;
+  /** Where 0, nothing is written. */
+  readonly enable: Literal;
+  /** Where 0, what is written leaves x where it differs. */
+  readonly surely: Literal;
+  /** As in `ReadPort`; 0 for a bit that is x. */
+  readonly address: readonly Literal[];
+  /** 1 for a bit that is x. */
+  readonly addressUnknown: readonly Literal[];
+  /** 0 for a bit that is x. */
+  readonly data: readonly Literal[];
+  readonly dataUnknown: readonly Literal[];
+  /** Per bit of the word: 0 where it is not written. Empty where all are. */
+  readonly mask: readonly Literal[];
+  /** Per bit of the word: 0 where it may be written or not. Empty where `mask` is. */
+  readonly maskSurely: readonly Literal[];
 }
 
 /** A condition under which a cycle has no result, and why. */

@@ -96,6 +96,25 @@ export class LogicBuilder {
     return this.#node(LogicOp.Mux, select, zero ^ inverted, one ^ inverted) ^ inverted;
   }
 
+  /** The number that bits make, the first one lowest; see `LogicOp.Pack`. */
+  pack(bits: readonly Literal[]): Literal {
+    return bits.reduceRight(
+      (number, bit) =>
+        number === FALSE && bit === FALSE ? FALSE : this.#node(LogicOp.Pack, bit, number, 0),
+      FALSE,
+    );
+  }
+
+  /** A word of a memory, for `bit`; see `LogicOp.Load`. */
+  load(memory: number, address: Literal, valid: Literal): Literal {
+    return this.#node(LogicOp.Load, address, valid, memory);
+  }
+
+  /** A bit of a word; see `LogicOp.Bit`. */
+  bit(word: Literal, bit: number): Literal {
+    return this.#node(LogicOp.Bit, word, FALSE, bit);
+  }
+
   /** The columns of the graph so far. */
   take(): { op: Uint8Array; a: Uint32Array; b: Uint32Array; c: Uint32Array } {
     return { op: this.#op.take(), a: this.#a.take(), b: this.#b.take(), c: this.#c.take() };

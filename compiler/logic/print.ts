@@ -14,6 +14,11 @@ export function printLogic(logic: Logic): string {
     const { role, index } = logic.states[bit]!;
     lines.push(`state ${bit} (${role} ${index}) = ${name(literal)}`);
   });
+  for (const write of logic.writes) {
+    const { memory, enable, address, data } = write;
+    const [at, what] = [address, data].map((bits) => bits.map(name).join(' '));
+    lines.push(`write memory ${memory} if ${name(enable)} at ${at} of ${what}`);
+  }
   for (const { when, message } of logic.faults) lines.push(`fault ${name(when)}: ${message}`);
   return lines.join('\n');
 }
@@ -29,6 +34,12 @@ function body({ op, a, b, c }: Logic, node: number): string {
       return `and ${first} ${second}`;
     case LogicOp.Xor:
       return `xor ${first} ${second}`;
+    case LogicOp.Pack:
+      return `pack ${first} ${second}`;
+    case LogicOp.Load:
+      return `load memory ${c[node]} ${first} ${second}`;
+    case LogicOp.Bit:
+      return `bit ${c[node]} ${first}`;
     default:
       return `mux ${first} ${second} ${third}`;
   }

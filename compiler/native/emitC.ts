@@ -4,6 +4,7 @@ import { netName, primaryNames } from '../circuit/hierarchy.js';
 import { NO_NET } from '../circuit/ids.js';
 import { inputRowNets, outputRowNets } from '../circuit/modelLayout.js';
 import type { Design } from '../compile.js';
+import { type CWords, packedWords } from './cWords.js';
 import { mainText } from './mainText.js';
 import { obstacleToOneStep } from './oneStep.js';
 import { settlingOrder } from './settlingOrder.js';
@@ -14,12 +15,12 @@ export type EmittedC = { readonly text: string } | { readonly obstacle: string }
 /**
  * Writes a design as straight-line C: a yardstick for generated code.
  *
- * It is the circuit as read, through no pass of the compiler: one `unsigned` for each net that
- * outputs or registers depend on, of which bit 0 counts. `state` is the power-up state in the order
+ * It is the circuit as read, through no pass of the compiler: one of `words` for each net that
+ * outputs or registers depend on. `state` is the power-up state in the order
  * of `ModelLayout.stateNames`, 0 or 1 each. See `mainText` for how to call the program. There is
  * none for a design whose cycle is more than one settling and one commit.
  */
-export function emitC(design: Design, state: Uint8Array): EmittedC {
+export function emitC(design: Design, state: Uint8Array, words: CWords = packedWords): EmittedC {
   const obstacle = obstacleToOneStep(design);
   if (obstacle !== undefined) return { obstacle };
   const { circuit, layout } = design;
@@ -32,47 +33,53 @@ export function emitC(design: Design, state: Uint8Array): EmittedC {
   ]);
   if (order === undefined) return { obstacle: 'the logic has a loop' };
   const lines = [
-    ...(registers.count > 0 ? [stateDeclaration(state)] : []),
+    ...words.declarations,
+    ...(registers.count > 0 ? [stateDeclaration(state, words)] : []),
     'static void step(const unsigned *in, unsigned *out)',
     '{',
     '  (void)in;',
     '  (void)out;',
-    ...new StepWriter(design).lines(order),
+    ...words.opening,
+    ...new StepWriter(design, words).lines(order),
     '}',
   ];
-  return { text: `${lines.join('\n')}\n${mainText(layout.inputs.words, layout.outputs.words)}` };
+  const main = mainText(words.rowNumbers(layout.inputs), words.rowNumbers(layout.outputs));
+  return { text: `${lines.join('\n')}\n${main}` };
 }
 
-function stateDeclaration(state: Uint8Array): string {
+function stateDeclaration(state: Uint8Array, { type, ones: one, zeros }: CWords): string {
   const ones = Array.from(state.keys()).filter((index) => state[index] === 1);
-  const initial = ones.map((index) => `[${index}] = 1u`).join(', ') || '0u';
-  return `static unsigned state[${state.length}] = {${initial}};`;
+  const initial = ones.map((index) => `[${index}] = ${one}`).join(', ') || zeros;
+  return `static ${type} state[${state.length}] = {${initial}};`;
 }
 
 /** Writes the body of the function that runs one cycle. */
 class StepWriter {
   readonly #circuit: Circuit;
+  readonly #words: CWords;
   readonly #names: Int32Array;
   /** What a source net is read from, where it has a place of its own. */
   readonly #source: readonly (string | undefined)[];
 
-  constructor(design: Design) {
+  constructor(design: Design, words: CWords) {
     this.#circuit = design.circuit;
+    this.#words = words;
     this.#names = primaryNames(design.circuit.hierarchy, design.circuit.netCount);
-    this.#source = sourceExpressions(design);
+    this.#source = sourceExpressions(design, words);
   }
 
   lines(order: Uint32Array): string[] {
     const { registers } = this.#circuit;
     const lines = Array.from(
       order,
-      (net) => `  const unsigned n${net} = ${this.#value(net)}; /* ${this.#name(net)} */`,
+      (net) =>
+        `  const ${this.#words.type} n${net} = ${this.#value(net)}; /* ${this.#name(net)} */`,
     );
     // Below the last read of the state, so that all registers change together.
     registers.data.forEach((net, i) => {
       lines.push(`  state[${i}] = ${controlled(this.#circuit, i, `n${net}`)};`);
     });
-    return [...lines, ...packedOutputs(outputRowNets(this.#circuit))];
+    return [...lines, ...this.#words.outputs(outputRowNets(this.#circuit))];
   }
 
   #value(net: number): string {
@@ -87,7 +94,8 @@ class StepWriter {
       return `${zero} ^ (${select} & (${zero} ^ ${one}))`;
     }
     const { fold } = gateInfo(kind[net]!);
-    if (fold === undefined) return this.#source[net] ?? (kind[net] === GateKind.One ? '~0u' : '0u');
+    const { ones, zeros } = this.#words;
+    if (fold === undefined) return this.#source[net] ?? (kind[net] === GateKind.One ? ones : zeros);
     const folded = pins.join(` ${operators[fold.operation]} `);
     return fold.inverted ? `~(${folded})` : folded;
   }
@@ -100,13 +108,15 @@ class StepWriter {
 
 const operators = { and: '&', or: '|', xor: '^' } as const;
 
-function sourceExpressions({ circuit, clocks }: Design): (string | undefined)[] {
+function sourceExpressions({ circuit, clocks }: Design, words: CWords): (string | undefined)[] {
   const expressions: (string | undefined)[] = new Array(circuit.netCount);
   inputRowNets(circuit, clocks).forEach((net, bit) => {
-    if (net !== NO_NET) expressions[net] = `in[${bit >>> 5}] >> ${bit & 31}`;
+    if (net !== NO_NET) expressions[net] = words.input(bit);
   });
   // Outputs and data are taken while the clock is inactive, so it is a constant to them.
-  for (const { net, inactive } of clocks.ports) expressions[net] = inactive === 1 ? '~0u' : '0u';
+  for (const { net, inactive } of clocks.ports) {
+    expressions[net] = inactive === 1 ? words.ones : words.zeros;
+  }
   circuit.registers.output.forEach((net, i) => {
     expressions[net] = controlled(circuit, i, `state[${i}]`);
   });
@@ -123,15 +133,4 @@ function controlled({ registers }: Circuit, register: number, held: string): str
   return registers.priority[register] === Priority.SetWins
     ? withSet(withReset(held))
     : withReset(withSet(held));
-}
-
-function packedOutputs(nets: Uint32Array): string[] {
-  const lines: string[] = [];
-  for (let first = 0; first < nets.length; first += 32) {
-    const bits = Array.from(nets.subarray(first, first + 32), (net, bit) =>
-      bit === 0 ? `(n${net} & 1u)` : `(n${net} & 1u) << ${bit}`,
-    );
-    lines.push(`  out[${first >>> 5}] = ${bits.join(' | ')};`);
-  }
-  return lines;
 }

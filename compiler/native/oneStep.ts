@@ -3,6 +3,7 @@ import { directSources, INVERTED, NOT_DIRECT } from '../circuit/directSources.js
 import { GateKind, isGate } from '../circuit/gates.js';
 import { NO_NET } from '../circuit/ids.js';
 import { describeNets } from '../circuit/netPlaces.js';
+import { ActiveTables } from '../circuit/tables/activeTables.js';
 import type { Design } from '../compile.js';
 
 /**
@@ -19,6 +20,12 @@ export function obstacleToOneStep(design: Design): string | undefined {
   const isPlain = schedule.shapes.length === 1 && schedule.shapes[0]!.steps.length === 3;
   if (!isPlain) return 'the clocks tick each at its own pace';
   const { registers, latches } = circuit;
+  const [memory] = circuit.memories;
+  if (memory !== undefined) return `there is a memory: ${memory.name}`;
+  const [entry] = new ActiveTables(circuit, false).entries;
+  if (entry !== undefined) {
+    return `${describeNets(circuit, [circuit.tables.output[entry]!])} runs from its table`;
+  }
   if (latches.count > 0) {
     return `there are latches: ${describeNets(circuit, latches.output, 1)}`;
   }

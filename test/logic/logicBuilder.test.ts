@@ -7,7 +7,7 @@ import { evaluateLogic } from '../support/logic.js';
 
 const graph = (logic: LogicBuilder, outputs: readonly Literal[]): Logic => {
   const columns = logic.take();
-  const common = { inputCount: 8, next: [], states: [], updates: [], faults: [] };
+  const common = { inputCount: 8, next: [], states: [], updates: [], writes: [], faults: [] };
   return { ...common, ...columns, nodeCount: columns.op.length, outputs };
 };
 

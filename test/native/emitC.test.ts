@@ -6,10 +6,12 @@ import { GateKind } from '../../compiler/circuit/gates.js';
 import { powerUpState } from '../../compiler/circuit/powerUp.js';
 import { designOf } from '../../compiler/compile.js';
 import { ReferenceEngine } from '../../compiler/interpret/reference/referenceEngine.js';
+import { vectorWords } from '../../compiler/native/cWords.js';
 import { emitC } from '../../compiler/native/emitC.js';
 import { findCompiler } from '../../compiler/native/findCompiler.js';
 import { obstacleToOneStep } from '../../compiler/native/oneStep.js';
 import { NativeProgram } from '../../compiler/native/runC.js';
+import { LaneRows } from '../../runtime/laneRows.js';
 import { type RandomCircuitOptions, randomCircuit } from '../support/randomCircuit.js';
 import { firstDifference, randomRows, responseOf } from '../support/responses.js';
 import { smallCircuit } from '../support/smallCircuit.js';
@@ -43,6 +45,31 @@ async function expectAgreement(circuit: Circuit, seed: number): Promise<void> {
   }
 }
 
+/** The same for 128 sequences in vectors, each of which must do what it does alone. */
+async function expectVectorsAgree(circuit: Circuit, seed: number): Promise<void> {
+  const design = designOf(circuit);
+  const { inputs, outputs } = design.layout;
+  const state = powerUpState(circuit, 'random', seed);
+  const emitted = emitC(design, state, vectorWords);
+  if ('obstacle' in emitted) throw new Error(emitted.obstacle);
+  if (command.length === 0) return;
+  const stimuli = Array.from({ length: 128 }, (_, i) => randomRows(design.layout, seed + i, 20));
+  const stimulus = new LaneRows(inputs, false, 128).pack(stimuli, 20);
+  const flags = ['-Wall', '-Wextra', '-Werror'];
+  const program = await NativeProgram.build(emitted.text, command, { stimulus, count: 20 }, flags);
+  try {
+    const reference = new ReferenceEngine(circuit, design);
+    const responses = new LaneRows(outputs, false, 128).unpackAll(await program.respond(), 20);
+    for (const lane of [0, 31, 32, 127]) {
+      reference.reset(state);
+      const expected = responseOf(reference, 20, stimuli[lane]!);
+      expect(firstDifference(design.layout, responses[lane]!, expected)).toBeUndefined();
+    }
+  } finally {
+    program.close();
+  }
+}
+
 const isOneStep = (circuit: Circuit) => obstacleToOneStep(designOf(circuit)) === undefined;
 
 const holdsFor = (options: RandomCircuitOptions, numRuns: number) =>
@@ -58,6 +85,16 @@ describe('emitted C compiles without warnings and agrees with the reference', ()
   it('on random circuits', () => holdsFor({}, 8));
 
   it('with asynchronous set and reset', () => holdsFor({ asynchronous: true }, 8));
+
+  it('in vectors of 128 sequences', () =>
+    fc.assert(
+      fc.asyncProperty(
+        randomCircuit({ asynchronous: true, unknowns: true }).filter(isOneStep),
+        fc.nat(1e6),
+        expectVectorsAgree,
+      ),
+      { seed: SEED, numRuns: 4 },
+    ));
 
   it('with wide ports and constants x', () =>
     holdsFor({ maxWidth: 40, maxRegisters: 40, maxGates: 200, unknowns: true }, 4));

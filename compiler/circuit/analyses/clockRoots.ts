@@ -2,6 +2,7 @@ import { type Circuit, Edge } from '../circuit.js';
 import type { ClockPorts } from '../clockPorts.js';
 import { GateKind, gateInfo, isGate } from '../gates.js';
 import { NO_NET } from '../ids.js';
+import { clockPins } from '../memoryPorts.js';
 import { gateReaders, type Readers } from '../readers.js';
 import { followDividers } from './dividedClocks.js';
 import { NO_ROOTS, RootSets } from './rootSets.js';
@@ -38,6 +39,8 @@ export interface ClockRoots {
   readonly polarity: Uint8Array;
   /** The clock pins of registers. */
   readonly registers: ClockedPins;
+  /** The clocks of the write ports of memories, in the order of `memoryWrites`. */
+  readonly writes: ClockedPins;
   /** The enable pins of latches; never `Divided`, as an enable that is stored is no clock. */
   readonly latches: ClockedPins;
 }
@@ -55,11 +58,14 @@ export function clockRootsOf(circuit: Circuit, clocks: ClockPorts): ClockRoots {
     );
     return { roots, path };
   };
-  const registers = clocked(circuit.registers.clock);
+  const pins = clocked(clockPins(circuit).clock);
   const latches = clocked(circuit.latches.enable);
-  const divided = followDividers(circuit, readers, sets, registers.roots, latches.roots);
-  for (const register of divided) registers.path[register] = ClockPath.Divided;
-  return { sets, reaching, polarity, registers, latches };
+  const divided = followDividers(circuit, readers, sets, pins.roots, latches.roots);
+  for (const pin of divided) pins.path[pin] = ClockPath.Divided;
+  const { count } = circuit.registers;
+  const registers = { roots: pins.roots.subarray(0, count), path: pins.path.subarray(0, count) };
+  const writes = { roots: pins.roots.subarray(count), path: pins.path.subarray(count) };
+  return { sets, reaching, polarity, registers, writes, latches };
 }
 
 /**

@@ -1,13 +1,15 @@
 import type { Circuit } from '../circuit.js';
-import { isGate } from '../gates.js';
+import { GateKind, isGate } from '../gates.js';
 
 /**
- * How many gates have each level; entry 0 counts those without one, on or behind a combinational
+ * How many gates, without what memories read, have each level; entry 0 counts those without one, on or behind a combinational
  * loop. `level` is that of `levelsOf`.
  */
 export function gatesByLevel({ kind }: Circuit, level: Uint32Array): Uint32Array {
   const counts = new Uint32Array(highest(level) + 1);
-  for (let net = 0; net < level.length; net++) if (isGate(kind[net]!)) counts[level[net]!]!++;
+  for (let net = 0; net < level.length; net++) {
+    if (isGate(kind[net]!) && kind[net] !== GateKind.MemoryRead) counts[level[net]!]!++;
+  }
   return counts;
 }
 

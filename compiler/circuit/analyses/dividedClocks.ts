@@ -1,28 +1,29 @@
 import type { Circuit } from '../circuit.js';
 import { NO_NET } from '../ids.js';
+import { clockPins } from '../memoryPorts.js';
 import type { Readers } from '../readers.js';
 import { markCone } from './cones.js';
 import { PinLists } from './pinLists.js';
 import { NO_ROOTS, type RootSets } from './rootSets.js';
 
 /**
- * Gives registers whose clock pin no clock port reaches through gates the clock ports of the
- * registers and latches that make their clock, and theirs in turn.
+ * Gives clock pins that no clock port reaches through gates the clock ports of the registers and
+ * latches that make their clock, and theirs in turn.
  *
- * `registerRoots` and `latchRoots` are sets of clock ports, of which the first is completed.
- * Returns the registers that got something.
+ * `pinRoots` (of `clockPins`) and `latchRoots` are sets of clock ports, of which the first is
+ * completed. Returns the pins that got something.
  */
 export function followDividers(
   circuit: Circuit,
   { start, reader }: Readers,
   sets: RootSets,
-  registerRoots: Uint32Array,
+  pinRoots: Uint32Array,
   latchRoots: Uint32Array,
 ): number[] {
   const { registers, latches, netCount } = circuit;
-  const isOpen = Uint8Array.from(registerRoots, (roots) => (roots === NO_ROOTS ? 1 : 0));
+  const isOpen = Uint8Array.from(pinRoots, (roots) => (roots === NO_ROOTS ? 1 : 0));
   if (!isOpen.includes(1)) return [];
-  const openPins = registers.clock.map((pin, r) => (isOpen[r] === 1 ? pin : NO_NET));
+  const openPins = clockPins(circuit).clock.map((pin, r) => (isOpen[r] === 1 ? pin : NO_NET));
   const inFront = new Uint8Array(netCount);
   markCone(circuit, openPins, inFront);
   const clockedBy = new PinLists(netCount, openPins);
@@ -34,7 +35,7 @@ export function followDividers(
     pending.push(net);
   };
   registers.output.forEach((net, r) => {
-    raise(net, registerRoots[r]!);
+    raise(net, pinRoots[r]!);
   });
   latches.output.forEach((net, l) => {
     raise(net, latchRoots[l]!);
@@ -42,11 +43,11 @@ export function followDividers(
   for (let net = pending.pop(); net !== undefined; net = pending.pop()) {
     const roots = derived[net]!;
     for (let r = clockedBy.first(net); r >= 0; r = clockedBy.next(r)) {
-      registerRoots[r] = sets.union(registerRoots[r]!, roots);
-      raise(registers.output[r]!, registerRoots[r]!);
+      pinRoots[r] = sets.union(pinRoots[r]!, roots);
+      if (r < registers.count) raise(registers.output[r]!, pinRoots[r]!);
     }
     for (let i = start[net]!; i < start[net + 1]!; i++) raise(reader[i]!, roots);
   }
-  const isDivided = (r: number): boolean => isOpen[r] === 1 && registerRoots[r] !== NO_ROOTS;
-  return Array.from(registerRoots.keys()).filter(isDivided);
+  const isDivided = (r: number): boolean => isOpen[r] === 1 && pinRoots[r] !== NO_ROOTS;
+  return Array.from(pinRoots.keys()).filter(isDivided);
 }

@@ -1,27 +1,29 @@
 import type { Circuit } from '../circuit.js';
 import { NO_NET } from '../ids.js';
+import { memoryPins } from '../memoryPorts.js';
 
-/** For each net, how many read it: inputs of gates, pins of registers and latches, output bits. */
+/** For each net, how many read it: inputs of gates, pins of state elements, output bits. */
 export function readCounts(circuit: Circuit): Uint32Array {
-  const { registers, latches, fanin, outputs } = circuit;
+  const { fanin, outputs } = circuit;
   const counts = new Uint32Array(circuit.netCount);
   const add = (nets: Uint32Array): void => {
     for (let i = 0; i < nets.length; i++) if (nets[i] !== NO_NET) counts[nets[i]!]!++;
   };
   add(fanin);
-  for (const pins of statePins(registers, latches)) add(pins);
+  for (const pins of statePins(circuit)) add(pins);
   for (const { nets } of outputs) add(nets);
   return counts;
 }
 
-/** The columns of all pins by which registers and latches read nets. */
+/** The columns of all pins by which registers, latches and write ports of memories read nets. */
 export function statePins(
-  registers: Circuit['registers'],
-  latches: Circuit['latches'],
+  circuit: Pick<Circuit, 'registers' | 'latches' | 'memories'>,
 ): readonly Uint32Array[] {
+  const { registers, latches } = circuit;
   return [
     ...[registers.data, registers.clock, registers.set, registers.reset],
     ...[latches.data, latches.enable, latches.set, latches.reset],
+    memoryPins(circuit),
   ];
 }
 

@@ -1,6 +1,10 @@
 import type { Circuit } from '../../circuit/circuit.js';
 import { GateKind } from '../../circuit/gates.js';
 import { NO_NET } from '../../circuit/ids.js';
+import { loopsOf } from '../../circuit/loops.js';
+import type { ActiveTables } from '../../circuit/tables/activeTables.js';
+import { stateOf } from '../../circuit/tables/tableRows.js';
+import type { ReferenceMemories } from './memories.js';
 import { AND, choose, NOT, OR, type ValueTable, withSetReset, XOR } from './values.js';
 
 /** Computes single nets of a circuit from the values of all nets. */
@@ -9,17 +13,33 @@ export class Evaluator {
   readonly #elementOf: Uint32Array;
   readonly #value: Uint8Array;
   readonly #unknown: number;
+  readonly #memories: ReferenceMemories;
+  readonly #tables: ActiveTables;
+  readonly #delayed: Uint8Array;
 
   /** Reads `value` at each call. `unknown` is what a constant x reads as: 2, or 0 if two-valued. */
-  constructor(circuit: Circuit, elementOf: Uint32Array, value: Uint8Array, unknown: number) {
+  constructor(
+    circuit: Circuit,
+    elementOf: Uint32Array,
+    value: Uint8Array,
+    unknown: number,
+    memories: ReferenceMemories,
+    tables: ActiveTables,
+  ) {
     this.#circuit = circuit;
     this.#elementOf = elementOf;
     this.#value = value;
     this.#unknown = unknown;
+    this.#memories = memories;
+    this.#tables = tables;
+    this.#delayed = loopsOf(circuit).delayed;
   }
 
   /** What a net's driver makes of the present values. An input and what is held stay. */
   evaluate(net: number): number {
+    if (this.#isDelayed(net)) return this.#value[net]!;
+    const entry = this.#tables.of(net);
+    if (entry >= 0) return this.tableValue(entry, this.#value[net]!);
     switch (this.#circuit.kind[net]) {
       case GateKind.Zero:
         return 0;
@@ -47,9 +67,27 @@ export class Evaluator {
         return NOT[this.#fold(net, XOR)]!;
       case GateKind.Mux:
         return this.#mux(net);
+      case GateKind.MemoryRead:
+        return this.#memories.read(net);
       default:
         return this.#value[net]!;
     }
+  }
+
+  /** Set and reset act on it in waves, and not while the logic settles. */
+  #isDelayed(net: number): boolean {
+    const isRegister = this.#circuit.kind[net] === GateKind.Register;
+    return isRegister && this.#delayed[this.#elementOf[net]!] === 1;
+  }
+
+  /** What a cell that goes by a table shows if it holds `held`. */
+  tableValue(entry: number, held: number): number {
+    const tables = this.#tables;
+    const { diagram } = tables.form(entry);
+    const state = stateOf(tables.table(entry).inputs);
+    return diagram.walk(tables.settled(entry), (variable) =>
+      variable === state ? held : this.#value[tables.input(entry, variable)]!,
+    );
   }
 
   /** What a register shows that would hold `held` if set and reset were inactive. */

@@ -1,17 +1,23 @@
-import { type Engine, RunFault } from '../../../runtime/engine.js';
-import { checkRun, checkState } from '../../../runtime/engineArguments.js';
+import { type Engine, RunFault, type RunPoint } from '../../../runtime/engine.js';
+import { checkBefore, checkRun, checkState, lastRow } from '../../../runtime/engineArguments.js';
 import { type ModelLayout, rowStride } from '../../../runtime/layout.js';
 import type { Circuit } from '../../circuit/circuit.js';
 import { Edge } from '../../circuit/circuit.js';
 import type { ClockPorts } from '../../circuit/clockPorts.js';
 import { type ClockSchedule, togetherSchedule } from '../../circuit/clockSchedule.js';
 import { NO_NET } from '../../circuit/ids.js';
+import { type ClockPins, clockPins } from '../../circuit/memoryPorts.js';
 import { inputRowNets, outputRowNets, stateNets } from '../../circuit/modelLayout.js';
 import { describeNets, placeOfNet } from '../../circuit/netPlaces.js';
 import { powerUpState } from '../../circuit/powerUp.js';
+import { initialMemory } from '../../circuit/powerUpMemory.js';
 import { X } from '../../circuit/values.js';
+import { waveDepths } from '../../circuit/waveDepths.js';
 import { waveLimit } from '../../circuit/waveLimit.js';
+import type { CapturedWrite } from './memories.js';
+import { PulseWatch } from './pulseWatch.js';
 import { Settler, UnsettledLoop } from './settler.js';
+import { type Change, TableWatch } from './tableWatch.js';
 import { merge } from './values.js';
 
 /** What `ReferenceEngine` needs beside the circuit: the rows, and which inputs tick. */
@@ -34,7 +40,7 @@ export interface ReferenceModel {
  * establishes levels; a change from an unknown level before it is no edge.
  *
  * An edge that may have been one (0 to x, x to 1, x to x on a rising-edge pin) leaves the old value
- * where it equals the data, and x elsewhere. A pin that stays x may have moved in every wave. Where clock pins move one another beyond
+ * where it equals the data, and x elsewhere. A pin that stays x may have moved in every wave up to the last that can move it. Where clock pins move one another beyond
  * `waveLimit`, a two-valued run is at fault; in a three-valued one, what would capture next is x.
  *
  * It starts with the power-up state `zero`, or `unknown` if three-valued. After a `RunFault` it
@@ -48,13 +54,20 @@ export class ReferenceEngine implements Engine {
   readonly #inputs: Uint32Array;
   readonly #outputs: Uint32Array;
   readonly #state: Uint32Array;
-  /** Per net that clocks registers: its value when edges were last looked for. */
+  /** Per net on clock pins: its value when edges were last looked for. */
   readonly #seen: Uint8Array;
+  readonly #initialMemory: Uint8Array;
+  readonly #clockPins: ClockPins;
   readonly #clockNets: readonly number[];
+  readonly #tableWatch: TableWatch;
+  readonly #pulseWatch: PulseWatch;
   readonly #waveLimit: number;
+  /** By the levels of all clocks. */
+  readonly #lastWavesAt = new Map<string, ReadonlyMap<number, number>>();
   readonly #schedule: ClockSchedule;
   #position = 0;
   #started = false;
+  #before: Uint32Array | undefined;
 
   constructor(circuit: Circuit, { layout, clocks, schedule }: ReferenceModel) {
     this.layout = layout;
@@ -62,12 +75,16 @@ export class ReferenceEngine implements Engine {
     this.#clocks = clocks.ports;
     this.#schedule = schedule ?? togetherSchedule(clocks);
     this.#settler = new Settler(circuit, layout.threeValued);
-    this.#waveLimit = waveLimit(circuit);
+    this.#waveLimit = waveLimit(circuit, layout.threeValued);
     this.#inputs = inputRowNets(circuit, clocks);
     this.#outputs = outputRowNets(circuit);
     this.#state = stateNets(circuit);
     this.#seen = new Uint8Array(circuit.netCount);
-    this.#clockNets = [...new Set(circuit.registers.clock)];
+    this.#initialMemory = initialMemory(circuit.memories, layout.threeValued);
+    this.#clockPins = clockPins(circuit);
+    this.#clockNets = clockedNets(this.#settler);
+    this.#tableWatch = new TableWatch(circuit, this.#settler);
+    this.#pulseWatch = new PulseWatch(circuit, this.#settler);
     this.reset(powerUpState(circuit, layout.threeValued ? 'unknown' : 'zero'));
   }
 
@@ -77,12 +94,45 @@ export class ReferenceEngine implements Engine {
     this.#state.forEach((net, index) => {
       this.#settler.set(net, state[index]!);
     });
+    this.#settler.memories.load(this.#initialMemory);
     this.#started = false;
     this.#position = 0;
+    this.#before = undefined;
+  }
+
+  save(): RunPoint {
+    const [state, memory] = [this.state(), this.memoryState()];
+    return { state, memory, before: this.#before, position: this.#position };
+  }
+
+  restore({ state, memory, before, position }: RunPoint): void {
+    checkBefore(this.layout, before);
+    this.reset(state);
+    this.loadMemory(memory);
+    this.#position = position % this.#schedule.pattern.length;
+    this.#before = before;
+    if (before === undefined) return;
+    // Between two cycles everything has settled, with the inputs of the one before.
+    const { start } = this.#schedule.shapes[this.#schedule.pattern[this.#position]!]!;
+    this.#applyInputs(before, 0, start);
   }
 
   state(): Uint8Array {
     return Uint8Array.from(this.#state, (net) => this.#settler.value[net]!);
+  }
+
+  memoryState(): Uint8Array {
+    return this.#settler.memories.bytes();
+  }
+
+  loadMemory(bytes: Uint8Array): void {
+    const settler = this.#settler;
+    settler.memories.load(bytes);
+    for (const memory of this.#circuit.memories.keys()) settler.touchMemory(memory);
+    if (!this.#started) return;
+    // Between two cycles everything has settled, and no clock pin moves by what is loaded.
+    settler.settle();
+    this.#forgetEdges();
   }
 
   run(
@@ -104,6 +154,7 @@ export class ReferenceEngine implements Engine {
         }
         this.#position = (this.#position + 1) % this.#schedule.pattern.length;
       }
+      if (cycles > 0) this.#before = lastRow(this.layout, cycles, stimulus, stimulusStride);
     } catch (error) {
       if (!(error instanceof UnsettledLoop)) throw error;
       const nets = describeNets(this.#circuit, error.nets);
@@ -136,9 +187,31 @@ export class ReferenceEngine implements Engine {
     }
     this.#setClocks(clocks);
     settler.settle();
-    settler.takeMovedClocks();
-    for (const net of this.#circuit.registers.clock) this.#seen[net] = settler.value[net]!;
+    this.#forgetEdges();
+    this.#establish();
     this.#started = true;
+  }
+
+  /** Takes the clock pins as they are now for what they were before. */
+  #forgetEdges(): void {
+    this.#settler.takeMovedClocks();
+    for (const net of this.#clockNets) this.#seen[net] = this.#settler.value[net]!;
+    this.#tableWatch.forget();
+    this.#pulseWatch.forget();
+  }
+
+  /** Lets set and reset that act in waves do so, before there is any edge. */
+  #establish(): void {
+    for (let wave = 0; wave <= this.#waveLimit; wave++) {
+      const endless = wave === this.#waveLimit && this.layout.threeValued;
+      const changes = [...this.#pulseWatch.look(endless), ...this.#tableWatch.look(false, endless)];
+      if (changes.length === 0) return;
+      if (wave === this.#waveLimit && !endless) throw new UnsettledLoop(netsOf(changes));
+      for (const { net, value } of changes) this.#settler.set(net, value);
+      this.#settler.settle();
+      if (endless) this.#pulseWatch.rest();
+      this.#forgetEdges();
+    }
   }
 
   #moveClocks(active: readonly boolean[]): void {
@@ -157,63 +230,106 @@ export class ReferenceEngine implements Engine {
     const settler = this.#settler;
     settler.settle();
     for (let wave = 0; wave <= this.#waveLimit; wave++) {
-      const unknown = this.#unknownClocks();
+      const unknown = this.#unknownClocks(wave);
       const moved = [...settler.takeMovedClocks(), ...unknown];
       const isLast = wave === this.#waveLimit;
-      const captured = this.#capture(
+      const { captured, writes } = this.#capture(
         moved,
         (net) => (wave === 0 ? settler.valueBefore(net) : settler.value[net]!),
-        isLast,
+        wave,
       );
+      const events = this.#tableWatch.look(wave === 0, isLast && this.layout.threeValued);
+      const acting = this.#pulseWatch.look(isLast && this.layout.threeValued);
+      this.#pulseWatch.forget();
+      captured.unshift(...acting);
+      captured.push(...events);
+      const written = settler.memories.apply(writes, isLast && this.layout.threeValued);
+      for (const memory of written) settler.touchMemory(memory);
       // A pin that is x may move at any time: it is asked again with the data of after the change,
       // and after it has become x.
       const isAsked = moved.every((net) => settler.value[net] !== X || unknown.includes(net));
-      if (captured.length === 0 && isAsked && (wave > 0 || unknown.length === 0)) return;
-      if (isLast && !this.layout.threeValued) throw new UnsettledLoop(moved);
+      const isStill = captured.length === 0 && written.size === 0;
+      if (isStill && isAsked && (wave > 0 || unknown.length === 0)) return;
+      if (isLast && !this.layout.threeValued) {
+        throw new UnsettledLoop([...moved, ...netsOf(events), ...netsOf(acting)]);
+      }
       for (const { net, value } of captured) settler.set(net, value);
       settler.settle();
     }
+    this.#pulseWatch.rest();
     // What the last wave moved on its way to x is no edge.
     for (const net of settler.takeMovedClocks()) this.#seen[net] = settler.value[net]!;
+    this.#tableWatch.forget();
+    this.#pulseWatch.forget();
   }
 
-  /** Clock pins' nets that were x when edges were last looked for, and still are. */
-  #unknownClocks(): number[] {
+  /**
+   * Clock pins' nets that were x when edges were last looked for, and still are, unless nothing is
+   * left that could have moved them.
+   */
+  #unknownClocks(wave: number): number[] {
     if (!this.layout.threeValued) return [];
     const { value } = this.#settler;
-    return this.#clockNets.filter((net) => value[net] === X && this.#seen[net] === X);
+    const unknown = this.#clockNets.filter((net) => value[net] === X && this.#seen[net] === X);
+    if (wave === 0 || unknown.length === 0) return unknown;
+    const lastWaves = this.#lastWaves();
+    return unknown.filter((net) => wave <= lastWaves.get(net)!);
+  }
+
+  // Per clock pin's net the last wave that can move it, with the clocks at their present levels.
+  #lastWaves(): ReadonlyMap<number, number> {
+    const { value } = this.#settler;
+    const nets = this.#clocks.map(({ net }) => net);
+    const key = nets.map((net) => value[net]).join('');
+    let found = this.#lastWavesAt.get(key);
+    if (found === undefined) {
+      const ports = new Set<number>(nets);
+      const level = (net: number) => (ports.has(net) ? (value[net] as 0 | 1) : undefined);
+      const depths = waveDepths(this.#circuit, level);
+      found = new Map(Array.from(depths, (depth, pin) => [this.#clockPins.clock[pin]!, depth]));
+      this.#lastWavesAt.set(key, found);
+    }
+    return found;
   }
 
   #capture(
     movedClocks: readonly number[],
     dataOf: (net: number) => number,
-    isLast: boolean,
-  ): { net: number; value: number }[] {
+    wave: number,
+  ): { captured: Change[]; writes: CapturedWrite[] } {
+    const isLast = wave === this.#waveLimit;
     const settler = this.#settler;
     const { registers } = this.#circuit;
     const { clockedStart, clocked } = settler.dependencies;
-    const captured: { net: number; value: number }[] = [];
+    const captured: Change[] = [];
+    const writes: CapturedWrite[] = [];
     for (const clock of movedClocks) {
       const before = this.#seen[clock]!;
       const after = settler.value[clock]!;
       this.#seen[clock] = after;
       for (let i = clockedStart[clock]!; i < clockedStart[clock + 1]!; i++) {
         const register = clocked[i]!;
-        const idle = registers.edge[register] === Edge.Rising ? 0 : 1;
+        const idle = this.#clockPins.edge[register] === Edge.Rising ? 0 : 1;
         // No edge where the pin comes from or goes to the wrong level.
         if (before === 1 - idle || after === idle) continue;
-        const net = registers.output[register]!;
-        const data = dataOf(registers.data[register]!);
         const surely = before !== X && after !== X;
+        if (register >= registers.count) {
+          const port = register - registers.count;
+          writes.push(settler.memories.capture(port, surely ? 1 : X, dataOf));
+          continue;
+        }
+        const net = registers.output[register]!;
+        const taken = dataOf(registers.data[register]!);
+        const data = wave === 0 ? taken : this.#pulseWatch.guarded(register, taken);
         const held = surely ? data : merge(data, settler.value[net]!);
         const value = settler.evaluator.register(register, held);
         // A pin that stays x asks again until it has nothing more to say.
         if ((isLast || before === after) && value === settler.value[net]) continue;
         const endless = isLast && this.layout.threeValued;
-        captured.push({ net, value: endless ? settler.evaluator.register(register, X) : value });
+        captured.push({ net, value: endless ? this.#pulseWatch.doubted(register) : value });
       }
     }
-    return captured;
+    return { captured, writes };
   }
 
   #sample(response: Uint32Array, at: number): void {
@@ -226,6 +342,16 @@ export class ReferenceEngine implements Engine {
       response[word]! |= 1 << (bit & 31);
     }
   }
+}
+
+const netsOf = (changes: readonly Change[]): number[] => changes.map(({ net }) => net);
+
+function clockedNets({ dependencies: { clockedStart } }: Settler): number[] {
+  const nets: number[] = [];
+  for (let net = 0; net + 1 < clockedStart.length; net++) {
+    if (clockedStart[net]! < clockedStart[net + 1]!) nets.push(net);
+  }
+  return nets;
 }
 
 function bitOf(rows: Uint32Array, at: number, bit: number): number {

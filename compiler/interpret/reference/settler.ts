@@ -1,10 +1,12 @@
 import type { Circuit } from '../../circuit/circuit.js';
 import { GateKind, isGate } from '../../circuit/gates.js';
 import { loopsOf, roundLimit } from '../../circuit/loops.js';
+import { ActiveTables } from '../../circuit/tables/activeTables.js';
 import { X } from '../../circuit/values.js';
 import { type Dependencies, dependenciesOf } from './dependencies.js';
 import { Evaluator } from './evaluate.js';
 import { type EvaluationOrder, evaluationOrder } from './evaluationOrder.js';
+import { ReferenceMemories } from './memories.js';
 import { merge } from './values.js';
 
 /** Thrown where nets go on changing in a loop of a two-valued circuit. */
@@ -34,6 +36,10 @@ export class Settler {
   readonly value: Uint8Array;
   readonly dependencies: Dependencies;
   readonly evaluator: Evaluator;
+  readonly memories: ReferenceMemories;
+  readonly tables: ActiveTables;
+  /** What a constant x reads as. */
+  readonly unknown: number;
   readonly #circuit: Circuit;
   readonly #order: EvaluationOrder;
   readonly #threeValued: boolean;
@@ -57,12 +63,17 @@ export class Settler {
     this.#circuit = circuit;
     this.#threeValued = threeValued;
     this.value = new Uint8Array(netCount);
-    this.dependencies = dependenciesOf(circuit);
+    this.tables = new ActiveTables(circuit, threeValued);
+    this.unknown = threeValued ? X : 0;
+    this.dependencies = dependenciesOf(circuit, this.tables);
+    this.memories = new ReferenceMemories(circuit, threeValued, this.value);
     this.evaluator = new Evaluator(
       circuit,
       this.dependencies.elementOf,
       this.value,
-      threeValued ? X : 0,
+      this.unknown,
+      this.memories,
+      this.tables,
     );
     const place = new Uint32Array(netCount);
     for (const nets of loopsOf(circuit).nets)
@@ -125,6 +136,11 @@ export class Settler {
       this.#movedClocks.push(net);
     }
     for (let i = readerStart[net]!; i < readerStart[net + 1]!; i++) this.#schedule(reader[i]!);
+  }
+
+  /** Schedules all that reads a memory, whose contents have changed. */
+  touchMemory(memory: number): void {
+    for (const net of this.memories.netsOf(memory)) this.#schedule(net);
   }
 
   /** Evaluates what is scheduled until nothing is. Throws `UnsettledLoop`. */

@@ -1,8 +1,12 @@
 import type { Circuit } from '../../circuit/circuit.js';
 import { GateKind, gateInfo } from '../../circuit/gates.js';
 import { NO_NET } from '../../circuit/ids.js';
+import type { ActiveTables } from '../../circuit/tables/activeTables.js';
+import { stateOf } from '../../circuit/tables/tableRows.js';
 import type { Algebra, NetValue } from './algebra.js';
+import type { MemoryLogic, PendingWrite } from './memoryLogic.js';
 import { withSetReset } from './setReset.js';
+import { diagramValue } from './tableValue.js';
 
 /** The parts of a moment by which a driver's value follows from other nets. */
 export interface DriverContext {
@@ -10,6 +14,10 @@ export interface DriverContext {
   readonly algebra: Algebra;
   /** Per net driven by a register or latch: its index among these. */
   readonly elementOf: Int32Array;
+  readonly tables: ActiveTables;
+  /** What memory ports read, and what has been written in the cycle so far. */
+  readonly memories: MemoryLogic;
+  readonly writes: readonly PendingWrite[];
 }
 
 /**
@@ -22,6 +30,8 @@ export function driverValue(
   value: (net: number) => NetValue,
   held: NetValue,
 ): NetValue {
+  const entry = context.tables.of(net);
+  if (entry >= 0) return tableValue(context, entry, value, held);
   switch (context.circuit.kind[net]) {
     case GateKind.Register:
       return registerValue(context, net, value, held);
@@ -29,9 +39,24 @@ export function driverValue(
       return latchValue(context, net, value, held);
     case GateKind.Mux:
       return muxValue(context, net, value);
+    case GateKind.MemoryRead:
+      return context.memories.read(net, value, context.writes);
     default:
       return foldValue(context, net, value);
   }
+}
+
+function tableValue(
+  { tables, algebra }: DriverContext,
+  entry: number,
+  value: (net: number) => NetValue,
+  held: NetValue,
+): NetValue {
+  const { diagram } = tables.form(entry);
+  const state = stateOf(tables.table(entry).inputs);
+  return diagramValue(algebra, diagram, tables.settled(entry), (variable) =>
+    variable === state ? held : value(tables.input(entry, variable)),
+  );
 }
 
 function registerValue(

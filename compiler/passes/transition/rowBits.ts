@@ -2,6 +2,7 @@ import type { Circuit } from '../../circuit/circuit.js';
 import type { ClockPorts } from '../../circuit/clockPorts.js';
 import { inputRowNets } from '../../circuit/modelLayout.js';
 import type { LogicBuilder } from '../../logic/logicBuilder.js';
+import type { Prover } from '../../logic/prover.js';
 import { type NetValue, pair } from './algebra.js';
 
 /** Where each data input stands in the stimulus row, and what it is worth as logic. */
@@ -10,10 +11,19 @@ export class RowBits {
   readonly count: number;
   readonly #bitOf = new Map<number, number>();
   readonly #logic: LogicBuilder;
+  readonly #prover: Prover;
   readonly #unknownGroup: number;
 
-  constructor(circuit: Circuit, clocks: ClockPorts, logic: LogicBuilder, threeValued: boolean) {
+  /** `prover` is told what it may take for granted of the bits. */
+  constructor(
+    circuit: Circuit,
+    clocks: ClockPorts,
+    logic: LogicBuilder,
+    threeValued: boolean,
+    prover: Prover,
+  ) {
     this.#logic = logic;
+    this.#prover = prover;
     const nets = inputRowNets(circuit, clocks);
     for (const [bit, net] of nets.entries()) this.#bitOf.set(net, bit);
     const group = ((nets.length + 31) >>> 5) * 32;
@@ -31,6 +41,8 @@ export class RowBits {
     const one = this.#logic.input(bit);
     if (this.#unknownGroup === 0) return one;
     // The row has 0 as the value of an unknown bit, so "not 1" already means "may be 0".
-    return pair(this.#logic.or(one, this.#logic.input(this.#unknownGroup + bit)), one ^ 1);
+    const unknown = this.#logic.input(this.#unknownGroup + bit);
+    this.#prover.assumeNotBoth(one, unknown);
+    return pair(this.#logic.or(one, unknown), one ^ 1);
   }
 }

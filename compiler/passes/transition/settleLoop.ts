@@ -1,8 +1,12 @@
-import { isGate } from '../../circuit/gates.js';
+import { GateKind, isGate } from '../../circuit/gates.js';
+import { roundLimit } from '../../circuit/loops.js';
 import type { NetValue } from './algebra.js';
 import type { Moment, SettledMoment } from './moment.js';
 import { planLoop } from './planLoop.js';
 import { Rounds } from './rounds.js';
+
+/** Rounds of a loop that leads through a memory, whose words cannot be tried out. */
+const MEMORY_ROUNDS = 16;
 
 /**
  * Settles a combinational loop: its nets are evaluated in order, round after round, from the
@@ -23,7 +27,9 @@ export function settleLoop(
   const nets = loops.nets(loop);
   const start = Array.from(nets, (net) => startValue(settled, net));
   if (isUnchanged(settled, loop, start, outside)) return start;
-  const plan = planLoop(moment, nets, start, loops.outside(loop), outside);
+  const plan = readsMemory(moment, nets)
+    ? { rounds: Math.min(roundLimit(nets.length), MEMORY_ROUNDS), isProven: false }
+    : planLoop(moment, nets, start, loops.outside(loop), outside);
   const rounds = new Rounds(moment, nets, outside);
   const { values } = rounds.run(start, plan.rounds);
   if (plan.isProven) return values;
@@ -57,6 +63,7 @@ function isUnchanged(
 ): boolean {
   const { before, loops } = settled.moment;
   if (before === undefined || before.moment.kept !== undefined) return false;
+  if (before.moment.writes !== settled.moment.writes) return false;
   const settledNets = loops.nets(loop);
   const holds = settledNets.every((net, i) => {
     const isHolder = !isGate(settled.moment.circuit.kind[net]!);
@@ -69,6 +76,9 @@ function isUnchanged(
   });
   return true;
 }
+
+const readsMemory = ({ circuit }: Moment, nets: Uint32Array): boolean =>
+  nets.some((net) => circuit.kind[net] === GateKind.MemoryRead);
 
 const remembers = ({ circuit, loops }: Moment, net: number): boolean =>
   loops.isKept(net) || !isGate(circuit.kind[net]!);

@@ -56,7 +56,7 @@ export class Settled implements SettledMoment {
 
   // Computes a net, or names the next net that must be known before.
   #step(net: number): number {
-    const { circuit, algebra, inputs, loops, kept } = this.moment;
+    const { circuit, algebra, elementOf, pulses, inputs, loops, kept } = this.moment;
     const kind = circuit.kind[net];
     if (kind === GateKind.Zero) return this.#close(net, algebra.zero);
     if (kind === GateKind.One) return this.#close(net, algebra.one);
@@ -69,7 +69,13 @@ export class Settled implements SettledMoment {
     } else if (loops.loopOf(net) >= 0) {
       return this.#stepLoop(loops.loopOf(net));
     }
+    if (kind === GateKind.Register && pulses.isDelayed[elementOf[net]!] === 1) {
+      return this.#close(net, this.held(net));
+    }
+    const entry = this.moment.tables.of(net);
+    if (entry >= 0) return this.#stepTable(net, entry, isElement);
     if (isElement) return this.#stepElement(net, kind === GateKind.Register);
+    if (kind === GateKind.MemoryRead) return this.#stepRead(net);
     return kind === GateKind.Mux ? this.#stepMux(net) : this.#stepFold(net);
   }
 
@@ -86,6 +92,15 @@ export class Settled implements SettledMoment {
 
   #isKnown(net: number): boolean {
     return net === NO_NET || this.#value[net]! >= 0;
+  }
+
+  #stepTable(net: number, entry: number, isElement: boolean): number {
+    const { tables } = this.moment;
+    const nets = tables.form(entry).settlers.map((place) => tables.input(entry, place));
+    for (const each of nets) if (!this.#isKnown(each)) return each;
+    if (!isElement) return this.#compute(net, NO_VALUE);
+    const held = this.held(net);
+    return this.#unchanged(net, held, nets) ? this.#close(net, held) : this.#compute(net, held);
   }
 
   #stepElement(net: number, isRegister: boolean): number {
@@ -120,6 +135,18 @@ export class Settled implements SettledMoment {
     const one = circuit.fanin[at + 2]!;
     if (this.#value[select] !== algebra.one && !this.#isKnown(zero)) return zero;
     if (this.#value[select] !== algebra.zero && !this.#isKnown(one)) return one;
+    return this.#compute(net, NO_VALUE);
+  }
+
+  #stepRead(net: number): number {
+    const { faninStart, fanin } = this.moment.circuit;
+    const level = this.#stack.length - 1;
+    const start = faninStart[net]!;
+    for (let i = start + this.#progress[level]!; i < faninStart[net + 1]!; i++) {
+      if (this.#isKnown(fanin[i]!)) continue;
+      this.#progress[level] = i - start;
+      return fanin[i]!;
+    }
     return this.#compute(net, NO_VALUE);
   }
 

@@ -1,24 +1,28 @@
 import { type Literal, type LogicState, TRUE } from '../../logic/logic.js';
 import type { LogicBuilder } from '../../logic/logicBuilder.js';
+import type { Prover } from '../../logic/prover.js';
 import { mayBeOne, mayBeZero, type NetValue, pair } from './algebra.js';
 
 /** The state bits of a transition: made on demand, the same for all cycles. */
 export class StateBits {
   readonly list: LogicState[] = [];
   readonly #logic: LogicBuilder;
+  readonly #prover: Prover;
   readonly #threeValued: boolean;
   readonly #inputs = new Map<number, NetValue>();
   #started: Literal | undefined;
 
-  constructor(logic: LogicBuilder, threeValued: boolean) {
+  /** `prover` is told what it may take for granted of the bits. */
+  constructor(logic: LogicBuilder, threeValued: boolean, prover: Prover) {
     this.#logic = logic;
+    this.#prover = prover;
     this.#threeValued = threeValued;
   }
 
   /** What a state element of the circuit holds at the start of the cycle. */
   element(index: number): NetValue {
     const one = this.#bit({ role: 'value', index });
-    return this.#threeValued ? pair(one, this.#bit({ role: 'zero', index })) : one;
+    return this.#threeValued ? this.#pair(one, { role: 'zero', index }) : one;
   }
 
   /** What bit `index` of the stimulus row was in the cycle before. */
@@ -26,7 +30,7 @@ export class StateBits {
     const known = this.#inputs.get(index);
     if (known !== undefined) return known;
     const one = this.#bit({ role: 'input', index });
-    const value = this.#threeValued ? pair(one, this.#bit({ role: 'inputZero', index })) : one;
+    const value = this.#threeValued ? this.#pair(one, { role: 'inputZero', index }) : one;
     this.#inputs.set(index, value);
     return value;
   }
@@ -46,6 +50,12 @@ export class StateBits {
       if (role === 'input') return one(input(index));
       return role === 'inputZero' ? mayBeZero(input(index)) : TRUE;
     });
+  }
+
+  #pair(one: Literal, other: LogicState): NetValue {
+    const zero = this.#bit(other);
+    this.#prover.assumeEither(one, zero);
+    return pair(one, zero);
   }
 
   #bit(state: LogicState): Literal {

@@ -7,9 +7,12 @@ import {
 } from '../../circuit/clockSchedule.js';
 import { loopsOf } from '../../circuit/loops.js';
 import { describeNets, placeOfNet } from '../../circuit/netPlaces.js';
+import { pulsesOf } from '../../circuit/pulses.js';
+import { ActiveTables } from '../../circuit/tables/activeTables.js';
 import { waveLimit } from '../../circuit/waveLimit.js';
 import { FALSE, type Literal, type Logic, type LogicFault } from '../../logic/logic.js';
 import { LogicBuilder, type LogicOptions } from '../../logic/logicBuilder.js';
+import { Prover } from '../../logic/prover.js';
 import {
   type Algebra,
   mayBeOne,
@@ -19,12 +22,14 @@ import {
   twoValued,
 } from './algebra.js';
 import { elementsByNet } from './elements.js';
+import { heldLatches, heldRegister } from './heldValues.js';
 import { LoopSet } from './loopSet.js';
+import { MemoryLogic } from './memoryLogic.js';
 import type { Moment } from './moment.js';
 import { RowBits } from './rowBits.js';
 import { Settled } from './settled.js';
 import { StateBits } from './stateBits.js';
-import { capture, heldLatches, heldRegister, type WaveRules, withInputs } from './waves.js';
+import { capture, type WaveRules, withInputs } from './waves.js';
 
 /** How a circuit's cycle is turned into logic. */
 export interface TransitionOptions extends LogicOptions {
@@ -48,15 +53,19 @@ export function transitions(
 ): Logic[] {
   const isThreeValued = options.threeValued ?? false;
   const logic = new LogicBuilder(options);
-  const algebra = isThreeValued ? threeValued(logic) : twoValued(logic);
-  const row = new RowBits(circuit, clocks, logic, isThreeValued);
-  const states = new StateBits(logic, isThreeValued);
-  const scene = { circuit, clocks, algebra, row, states, held: heldAtStart(circuit, states) };
+  const prover = new Prover(logic);
+  const algebra = isThreeValued ? threeValued(logic, prover) : twoValued(logic, prover);
+  const row = new RowBits(circuit, clocks, logic, isThreeValued, prover);
+  const states = new StateBits(logic, isThreeValued, prover);
+  const memories = new MemoryLogic(circuit, algebra, logic);
+  const held = heldAtStart(circuit, states);
+  const scene = { circuit, clocks, algebra, row, states, memories, held };
   const cycles = schedule.shapes.map((shape) => followCycle(scene, shape));
   const graphs = cycles.map(({ sampled, end, faults }) => ({
     outputs: isThreeValued ? splitUnknown(logic, sampled) : sampled,
     // Only now are all state bits known that any of the cycles needs.
     next: states.nextOf(heldElements(end), (bit) => row.value(bit)),
+    writes: memories.carriedOut(end.moment.writes),
     faults,
   }));
   const columns = logic.take();
@@ -83,6 +92,7 @@ interface Scene {
   readonly algebra: Algebra;
   readonly row: RowBits;
   readonly states: StateBits;
+  readonly memories: MemoryLogic;
   /** What state elements hold when a cycle starts, in their order. */
   readonly held: readonly NetValue[];
 }
@@ -98,10 +108,10 @@ function followCycle(scene: Scene, shape: CycleShape): CourseOfCycle {
   const faults: LogicFault[] = [];
   const rules: WaveRules = {
     enabled: algebra.one,
-    limit: waveLimit(circuit),
-    endless: (when) => {
-      const message = 'clock pins move one another without end';
-      faults.push({ when, message, place: '' });
+    limit: waveLimit(circuit, algebra.hasUnknown),
+    endless: (when, nets) => {
+      const message = `registers move one another without end: ${describeNets(circuit, nets)}`;
+      faults.push({ when, message, place: placeOfNet(circuit, nets[0]!) });
     },
   };
   const inputs = (active: readonly boolean[]): Moment['inputs'] =>
@@ -146,7 +156,7 @@ function heldAtStart(circuit: Circuit, states: StateBits): NetValue[] {
 
 // Where the cycle before ended: everything has settled, with the inputs it had.
 function atStart(
-  { circuit, algebra, held }: Scene,
+  { circuit, algebra, memories, held }: Scene,
   inputs: Moment['inputs'],
   unsettled: Moment['unsettled'],
 ): Settled {
@@ -159,10 +169,14 @@ function atStart(
     circuit,
     algebra,
     elementOf: elementsByNet(circuit),
+    tables: new ActiveTables(circuit, algebra.hasUnknown),
+    pulses: pulsesOf(circuit),
     loops: new LoopSet(circuit),
     inputs,
     registers: Float64Array.from(held.slice(0, registers.count)),
     latches: Float64Array.from(held.slice(registers.count, elementCount)),
+    memories,
+    writes: [],
     kept: (net) => kept.get(net)!,
     unsettled,
   });

@@ -54,7 +54,7 @@ describe('unused parts', () => {
       fc.property(fc.oneof(plain, looped), (circuit) => {
         const { registers, latches } = circuit;
         const outputs = circuit.outputs.flatMap(({ nets }) => Array.from(nets));
-        const pins = statePins(registers, latches).flatMap((column) =>
+        const pins = statePins(circuit).flatMap((column) =>
           Array.from(column).filter((net) => net !== NO_NET),
         );
         const leading = reached(circuit, [...outputs, ...pins], false);
@@ -77,7 +77,7 @@ describe('read counts', () => {
     fc.assert(
       fc.property(plain, (circuit) => {
         const counts = readCounts(circuit);
-        const pins = statePins(circuit.registers, circuit.latches)
+        const pins = statePins(circuit)
           .flatMap((column) => Array.from(column))
           .filter((net) => net !== NO_NET).length;
         const bits = circuit.outputs.reduce((sum, { nets }) => sum + nets.length, 0);
