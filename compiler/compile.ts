@@ -8,17 +8,25 @@ import {
   timedSchedule,
   togetherSchedule,
 } from './circuit/clockSchedule.js';
+import type { MemoryShape } from './circuit/memory.js';
 import { modelLayout } from './circuit/modelLayout.js';
+import type { EmitOptions } from './emit/emitModel.js';
 import { type Emitter, localEmitter } from './emit/emitter.js';
+import { FALSE, type Logic } from './logic/logic.js';
+import { sinksOf } from './logic/sinks.js';
+import { buildPackedProgram } from './passes/buildPackedProgram.js';
 import { buildProgram } from './passes/buildProgram.js';
 import { choosePolarity } from './passes/choosePolarity.js';
 import { compact } from './passes/compact.js';
 import { cutBlocks } from './passes/cutBlocks.js';
 import { groupRegisters } from './passes/groupRegisters/groupRegisters.js';
+import { type Merged, mergeRegisters } from './passes/mergeRegisters/mergeRegisters.js';
+import { startBits } from './passes/mergeRegisters/startBits.js';
 import { orderNodes } from './passes/orderNodes.js';
 import { orderSinks } from './passes/orderSinks.js';
+import { type PackedLogic, packWords } from './passes/packWords/packWords.js';
 import { transitions } from './passes/transition/transition.js';
-import type { CyclePrograms } from './program/program.js';
+import type { CyclePrograms, Program } from './program/program.js';
 
 /** What the stages after reading need to know. */
 export interface CompileOptions {
@@ -58,22 +66,106 @@ function refuseUntimed(circuit: Circuit, named: readonly string[]): void {
   if (untimed) throw new RangeError(`clock ${untimed.name} has no timing`);
 }
 
-/** The passes, in order: from a circuit to the programs that emission and interpretation take. */
-export function programsOf({ circuit, clocks, schedule, layout }: Design): CyclePrograms {
+/** What becomes of a design in the cycles of each kind, and when which of them comes. */
+export interface DesignCycles extends Omit<CyclePrograms, 'programs' | 'derived'> {
+  readonly cycles: readonly Logic[];
+}
+
+/** The first pass: from a circuit to its cycles, each as a Boolean function. */
+export function cyclesOf({ circuit, clocks, schedule, layout }: Design): DesignCycles {
   const cycles = transitions(circuit, clocks, schedule, { threeValued: layout.threeValued });
+  return { cycles, pattern: schedule.pattern, memories: shapesOf(circuit) };
+}
+
+/**
+ * The passes, in order: from a circuit to the programs that emission and interpretation take. With
+ * `observes` they only compute the outputs: state and memories come to nothing.
+ */
+export const programsOf = (design: Design, observes = false): CyclePrograms =>
+  plainPrograms(cyclesOf(design), observes);
+
+function plainPrograms({ cycles: whole, ...rest }: DesignCycles, observes = false): CyclePrograms {
+  const cycles = observes ? whole.map(withoutNext) : whole;
   // Cycles of several kinds work on the same state bits: none of them may move or turn any.
-  const areSeveral = cycles.length > 1;
+  const areSeveral = cycles.length > 1 || observes;
   const programs = cycles.map((cycle) => {
     const whole = compact(cycle, areSeveral);
-    const logic = areSeveral ? whole : compact(groupRegisters(whole));
-    const order = orderNodes(logic, orderSinks(logic));
-    const inverted = choosePolarity(logic, areSeveral);
-    return buildProgram(logic, order, cutBlocks(logic, order), inverted);
+    return plainProgram(areSeveral ? whole : compact(groupRegisters(whole)), areSeveral);
   });
-  return { programs, pattern: schedule.pattern };
+  return { programs, ...rest };
+}
+
+/** Programs made by as few passes as possible: ready soon, for the first cycles. */
+export function quickProgramsOf({ cycles, ...rest }: DesignCycles): CyclePrograms {
+  const programs = cycles.map((cycle) => {
+    const logic = compact(cycle, cycles.length > 1);
+    const order = orderNodes(logic, sinksOf(logic));
+    return buildProgram(logic, order, [0], new Uint8Array(logic.nodeCount));
+  });
+  return { programs, ...rest };
+}
+
+const withoutNext = (logic: Logic): Logic => ({
+  ...logic,
+  next: logic.next.map(() => FALSE),
+  writes: [],
+});
+
+/**
+ * The passes, in order, for generated code, which works on sixteen bits at a time where that pays.
+ * `start` is the only state that the model will be reset to, with which registers can be merged.
+ * Cycles of several kinds share their state and are left as `programsOf` makes them.
+ */
+export const packedProgramsOf = (design: Design, start?: Uint8Array): CyclePrograms =>
+  packedPrograms(cyclesOf(design), start);
+
+/** The passes of `packedProgramsOf` behind the first one. */
+export function packedPrograms(design: DesignCycles, start?: Uint8Array): CyclePrograms {
+  const { cycles, ...rest } = design;
+  const [cycle, another] = cycles;
+  if (another !== undefined) return plainPrograms(design);
+  const whole = compact(cycle!);
+  const { logic, derived } = start ? merged(whole, start) : { logic: whole, derived: [] };
+  const packed = packWords(logic);
+  const program = packed ? packedProgram(packed) : plainProgram(compact(groupRegisters(logic)));
+  return { programs: [program], ...rest, derived };
+}
+
+function merged(logic: Logic, start: Uint8Array): Merged {
+  const { logic: smaller, derived } = mergeRegisters(logic, startBits(logic.states, start));
+  return { logic: compact(smaller), derived };
+}
+
+function packedProgram(packed: PackedLogic): Program {
+  const order = orderNodes(packed.scalar, orderSinks(packed.scalar));
+  return buildPackedProgram(packed, order, choosePolarity(packed.scalar, packed.fixedStates));
+}
+
+function plainProgram(logic: Logic, keepsStates = false): Program {
+  const order = orderNodes(logic, orderSinks(logic));
+  const inverted = choosePolarity(logic, keepsStates);
+  return buildProgram(logic, order, cutBlocks(logic, order), inverted);
+}
+
+// Without the ports, which are part of the programs.
+const shapesOf = ({ memories }: Circuit): MemoryShape[] =>
+  memories.map(({ reads, writes, ...shape }) => shape);
+
+/** How a model is made. */
+export interface ModelOptions extends EmitOptions {
+  /**
+   * The state elements that the model will start with. It gets faster where registers are equal
+   * from there on, and refuses other states to be reset to, except those that follow from this one.
+   */
+  readonly start?: Uint8Array;
 }
 
 /** Compiles a design to a WebAssembly model. */
-export function compile(design: Design, emitter: Emitter = localEmitter()): Promise<WasmModel> {
-  return emitter.emit(programsOf(design), design.layout);
+export async function compile(
+  design: Design,
+  emitter: Emitter = localEmitter(),
+  { start, ...options }: ModelOptions = {},
+): Promise<WasmModel> {
+  const model = await emitter.emit(packedProgramsOf(design, start), design.layout, options);
+  return start === undefined ? model : { ...model, start };
 }

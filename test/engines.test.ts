@@ -33,27 +33,27 @@ async function holdsFor(options: RandomCircuitOptions, threeValued: boolean, num
 }
 
 describe('the engines agree on random circuits', () => {
-  it('with registers on one edge', () => holdsFor({}, false, 100));
+  it('with registers on one edge', () => holdsFor({}, false, 60));
   it('with wide ports and many gates', () =>
-    holdsFor({ maxInputs: 8, maxWidth: 40, maxRegisters: 40, maxGates: 300 }, false, 40));
-  it('with asynchronous set and reset', () => holdsFor({ asynchronous: true }, false, 150));
-  it('with registers on both edges', () => holdsFor({ clocking: 'edges' }, false, 100));
+    holdsFor({ maxInputs: 8, maxWidth: 40, maxRegisters: 40, maxGates: 300 }, false, 24));
+  it('with asynchronous set and reset', () => holdsFor({ asynchronous: true }, false, 90));
+  it('with registers on both edges', () => holdsFor({ clocking: 'edges' }, false, 60));
   it('with gated clocks and latches', () =>
-    holdsFor({ clocking: 'gated', latches: true, asynchronous: true }, false, 100));
+    holdsFor({ clocking: 'gated', latches: true, asynchronous: true }, false, 60));
   it('with divided clocks', () =>
-    holdsFor({ clocking: 'divided', latches: true, asynchronous: true }, false, 100));
+    holdsFor({ clocking: 'divided', latches: true, asynchronous: true }, false, 60));
   it('with banks of registers', () =>
     fc.assert(fc.asyncProperty(randomBanks(), fc.boolean(), fc.nat(1e6), expectAgreement), {
       seed: SEED,
-      numRuns: 80,
+      numRuns: 50,
     }));
   it('with combinational loops', () =>
-    holdsFor({ loops: true, latches: true, asynchronous: true, maxGates: 25 }, false, 100));
+    holdsFor({ loops: true, latches: true, asynchronous: true, maxGates: 25 }, false, 60));
   it('with combinational loops and three values', () =>
-    holdsFor({ loops: true, unknowns: true, maxGates: 15 }, true, 100));
+    holdsFor({ loops: true, unknowns: true, maxGates: 15 }, true, 60));
   it('with gated clocks and three values', () =>
-    holdsFor({ clocking: 'gated', latches: true, asynchronous: true }, true, 100));
+    holdsFor({ clocking: 'gated', latches: true, asynchronous: true }, true, 60));
   it('with divided clocks and three values', () =>
-    holdsFor({ clocking: 'divided', asynchronous: true }, true, 100));
-  it('with three values', () => holdsFor({ unknowns: true, asynchronous: true }, true, 100));
+    holdsFor({ clocking: 'divided', asynchronous: true }, true, 60));
+  it('with three values', () => holdsFor({ unknowns: true, asynchronous: true }, true, 60));
 });

@@ -45,7 +45,7 @@ describe('the engines agree', () => {
           return expectAgreement(designOf(circuit, { ...timed, threeValued }), seed);
         },
       ),
-      { seed: 52, numRuns: 120 },
+      { seed: 52, numRuns: 60 },
     );
   });
 });

@@ -1,9 +1,18 @@
 import type binaryen from 'binaryen';
 import type { ModelLayout } from '../../runtime/layout.js';
 import type { WasmModel } from '../../runtime/wasmModel.js';
+import {
+  layMemories,
+  type MemoryPlaces,
+  memoryImage,
+  segmentsOf,
+} from '../program/memoryPlaces.js';
 import type { CyclePrograms, Program } from '../program/program.js';
 import { type AreaLayout, layArea } from './areaLayout.js';
 import { BlockEmitter, type Emission, type Pointers } from './blockEmitter.js';
+import { compareState } from './compareState.js';
+import { emitWrites } from './memory/writeCode.js';
+import { packedCycle } from './packedCycle.js';
 import {
   outputGroups,
   outputsInMemory,
@@ -13,7 +22,9 @@ import {
 } from './packOutputs.js';
 import { type CycleCode, RunLocal, runLoop, runPointers } from './runLoop.js';
 import { storesOf } from './sinks.js';
+import { addTableLoop, canHaveTable } from './tableLoop.js';
 import { emitUpdates } from './updates.js';
+import { stepHomes, vectorParts } from './vectorParts.js';
 
 /** Address of the first area; what lies below stays zero. */
 const FIRST_AREA = 1024;
@@ -28,11 +39,18 @@ const UPDATES_IN_BLOCK = 300;
 export const loadBinaryen = async (): Promise<typeof binaryen> =>
   (await import('binaryen')).default;
 
+/** What a module is made for. */
+export interface EmitOptions {
+  /** Its run loop can look for a state; see `compareState`. Costs some time in every cycle. */
+  readonly comparesState?: boolean;
+}
+
 /** Emits programs as a WebAssembly module; `wasm` is the loaded Binaryen library. */
 export function emitModel(
   wasm: typeof binaryen,
-  { programs, pattern }: CyclePrograms,
+  { programs, pattern, memories: shapes, derived }: CyclePrograms,
   layout: ModelLayout,
+  { comparesState = false }: EmitOptions = {},
 ): WasmModel {
   const module = new wasm.Module();
   try {
@@ -41,16 +59,29 @@ export function emitModel(
     const size = Math.max(...layouts.map((area) => area.size));
     const areas = [FIRST_AREA, FIRST_AREA + size] as const;
     const patternAt = FIRST_AREA + 2 * size;
-    const buffers = patternAt + Math.ceil(pattern.length / 64) * 64;
-    const segment = { name: 'pattern', offset: module.i32.const(patternAt), data: pattern };
+    const contents = patternAt + Math.ceil(pattern.length / 64) * 64;
+    const memories = layMemories(shapes, layout.threeValued, contents);
+    const buffers = Math.ceil(memories.end / 64) * 64;
+    const segments = [
+      { at: patternAt, data: pattern },
+      ...segmentsOf(memoryImage(memories)).map(({ at, data }) => ({ at: contents + at, data })),
+    ].map(({ at, data }, i) => ({ name: `data${i}`, offset: module.i32.const(at), data }));
     const pages = Math.ceil(buffers / 65536);
-    module.setMemory(pages, 65536, 'memory', [segment], false, false, '0');
+    module.setMemory(pages, 65536, 'memory', segments, false, false, '0');
     addGlobals(module, wasm.i32, areas[0]);
-    const cycles = programs.map((program, i) => cycleCode(wasm, module, program, layouts[i]!, i));
+    const cycles = programs.map((program, index) =>
+      cycleCode(wasm, module, program, { area: layouts[index]!, memories, index }),
+    );
     const parameters = wasm.createType(new Array(RunLocal.Current).fill(wasm.i32));
     const localCount = Math.max(...cycles.map((cycle) => cycle.localCount));
     const locals = new Array<binaryen.Type>(localCount - RunLocal.Current).fill(wasm.i32);
-    const place = { areaSum: areas[0] + areas[1], patternAt, patternLength: pattern.length };
+    const place = {
+      ...{ areaSum: areas[0] + areas[1], patternAt, patternLength: pattern.length },
+      ...(comparesState && {
+        afterCycle: (leave: () => binaryen.ExpressionRef) =>
+          compareState(wasm, module, programs[0]!.stateCount, leave).afterCycle,
+      }),
+    };
     module.addFunction(
       'run',
       parameters,
@@ -59,12 +90,15 @@ export function emitModel(
       runLoop(module, wasm.i32, place, cycles),
     );
     module.addFunctionExport('run', 'run');
+    if (canHaveTable({ programs, pattern, memories: shapes }, layout))
+      addTableLoop(wasm, module, layout);
     return {
       bytes: Uint8Array.from(module.emitBinary()),
       layout,
-      memory: { areas, buffers },
+      memory: { areas, contents, buffers },
       states: programs[0]!.states,
       stateInverted: programs[0]!.stateInverted,
+      ...(derived && derived.length > 0 && { derived }),
       faults: programs.flatMap((program) =>
         program.faults.map(({ message, place }) => ({ message, place })),
       ),
@@ -82,20 +116,45 @@ function addGlobals(module: binaryen.Module, i32: binaryen.Type, firstArea: numb
   }
 }
 
+/** Where the code of one cycle finds what, and which of the cycles it is. */
+interface CyclePlaces {
+  readonly area: AreaLayout;
+  readonly memories: MemoryPlaces;
+  readonly index: number;
+}
+
 // The code of one cycle, with its outputs packed into the response row.
 function cycleCode(
   wasm: typeof binaryen,
   module: binaryen.Module,
   program: Program,
-  area: AreaLayout,
-  index: number,
+  places: CyclePlaces,
+): CycleCode {
+  const code =
+    program.vectors === undefined
+      ? plainCode(wasm, module, program, places)
+      : packedCode(wasm, module, program, places);
+  const { area, memories, index } = places;
+  const pointers = () =>
+    [RunLocal.Current, RunLocal.Next, RunLocal.Row].map((local) =>
+      module.local.get(local, wasm.i32),
+    );
+  const writes = emitWrites(wasm, module, `cycle${index}`, area.staging, memories, pointers);
+  return { ...code, statements: [...code.statements, ...writes] };
+}
+
+function plainCode(
+  wasm: typeof binaryen,
+  module: binaryen.Module,
+  program: Program,
+  { area, memories, index }: CyclePlaces,
 ): CycleCode {
   const { i32 } = wasm;
   const isSmall = program.blockStart.length === 2 && program.stateCount < COPIES_IN_BLOCK;
   const groups = outputGroups(program);
   const packsValues = isSmall && program.outputs.length <= SCALAR_OUTPUTS;
   const sinks = storesOf(program, area, packsValues ? [] : outputsInMemory(groups));
-  const emission: Emission = { module, i32, program, area, sinks };
+  const emission: Emission = { module, i32, program, area, sinks, memories };
   const { statements, localCount } = isSmall
     ? inlineCycle(emission, packsValues)
     : callCycle(emission, `cycle${index}`, wasm.createType([i32, i32, i32]), wasm.none);
@@ -104,6 +163,22 @@ function cycleCode(
   }
   const faults = program.faults.map((_, fault) => area.faults + fault);
   return { statements, localCount, faults };
+}
+
+function packedCode(
+  wasm: typeof binaryen,
+  module: binaryen.Module,
+  program: Program,
+  { area, memories, index }: CyclePlaces,
+): CycleCode {
+  const groups = outputGroups(program);
+  const sinks = storesOf(program, area, outputsInMemory(groups));
+  const emission: Emission = { module, i32: wasm.i32, program, area, sinks, memories };
+  const homes = stepHomes(program.vectors!, vectorParts(program.vectors!).flat());
+  const statements = packedCycle(wasm, emission, `cycle${index}`, homes);
+  statements.push(...packFromMemory(emission, groups, runPointers, RunLocal.Response));
+  const faults = program.faults.map((_, fault) => area.faults + fault);
+  return { statements, localCount: RunLocal.Free, faults };
 }
 
 type Body = Pick<CycleCode, 'statements' | 'localCount'>;

@@ -1,12 +1,19 @@
 import { Worker } from 'node:worker_threads';
+import type { LaneCount } from '../../runtime/laneLayout.js';
+import type { LaneModel } from '../../runtime/laneModel.js';
 import type { ModelLayout } from '../../runtime/layout.js';
 import type { WasmModel } from '../../runtime/wasmModel.js';
+import type { LanePrograms } from '../program/laneProgram.js';
 import type { CyclePrograms } from '../program/program.js';
-import { emitModel, loadBinaryen } from './emitModel.js';
+import { type EmitOptions, emitModel, loadBinaryen } from './emitModel.js';
+import type { EmitRequest } from './emitWorker.js';
+import { emitLanes } from './lanes/emitLanes.js';
 
 /** Turns programs into models; gets ready as soon as it is made. */
 export interface Emitter {
-  emit(programs: CyclePrograms, layout: ModelLayout): Promise<WasmModel>;
+  emit(programs: CyclePrograms, layout: ModelLayout, options?: EmitOptions): Promise<WasmModel>;
+  /** The same for programs of lanes. */
+  emitLanes(programs: LanePrograms, layout: ModelLayout, lanes: LaneCount): Promise<LaneModel>;
   /** Lets go of what it holds. */
   close(): Promise<void>;
 }
@@ -24,7 +31,9 @@ export function startEmitter(): Emitter {
 export function localEmitter(): Emitter {
   const binaryen = loadBinaryen();
   return {
-    emit: async (programs, layout) => emitModel(await binaryen, programs, layout),
+    emit: async (programs, layout, options) => emitModel(await binaryen, programs, layout, options),
+    emitLanes: async (programs, layout, lanes) =>
+      emitLanes(await binaryen, programs, layout, lanes),
     close: async () => undefined,
   };
 }
@@ -36,12 +45,24 @@ class ThreadEmitter implements Emitter {
     this.#worker.unref();
   }
 
-  emit(programs: CyclePrograms, layout: ModelLayout): Promise<WasmModel> {
-    const { promise, resolve, reject } = withResolvers<WasmModel>();
+  emit(
+    programs: CyclePrograms,
+    layout: ModelLayout,
+    options: EmitOptions = {},
+  ): Promise<WasmModel> {
+    return this.#ask({ programs, layout, options });
+  }
+
+  emitLanes(programs: LanePrograms, layout: ModelLayout, lanes: LaneCount): Promise<LaneModel> {
+    return this.#ask({ programs, layout, lanes });
+  }
+
+  #ask<T>(request: EmitRequest): Promise<T> {
+    const { promise, resolve, reject } = withResolvers<T>();
     this.#worker.ref();
     this.#worker.once('message', resolve);
     this.#worker.once('error', reject);
-    this.#worker.postMessage({ programs, layout });
+    this.#worker.postMessage(request);
     return promise.finally(() => this.#worker.unref());
   }
 

@@ -15,12 +15,17 @@ export interface OutputGroup {
   readonly state: number;
 }
 
-/** Cuts the outputs into groups and finds those that are neighbouring state bits. */
+/**
+ * Cuts the outputs into groups, except what vectors make, and finds those that are neighbouring
+ * state bits.
+ */
 export function outputGroups(program: Program): OutputGroup[] {
   const groups: OutputGroup[] = [];
   const { outputs } = program;
+  const byVector = new Set(program.vectors?.outputs.map(({ to }) => to));
   const states = firstState(program);
   for (let first = 0; first < outputs.length; first += GROUP) {
+    if (byVector.has(first)) continue;
     const count = Math.min(GROUP, outputs.length - first);
     const start = outputs[first]!;
     const isState = start >= states && start + count <= firstResult(program);
@@ -61,7 +66,7 @@ export function packFromValues(
  * sixteen bits by one shift and one `bitmask`.
  */
 export function packFromMemory(
-  { module, area, i32: type }: Emission,
+  { module, area, program, i32: type }: Emission,
   groups: readonly OutputGroup[],
   { current, next }: Pointers,
   row: number,
@@ -75,11 +80,33 @@ export function packFromMemory(
     return count === GROUP ? bits : i32.and(bits, i32.const((1 << count) - 1));
   };
   const statements: binaryen.ExpressionRef[] = [];
-  for (let g = 0; g < groups.length; g += 2) {
+  const at = () => local.get(row, type);
+  for (let g = 0; g < groups.length; g++) {
+    const { first } = groups[g]!;
     const low = bitsOf(groups[g]!);
-    const high = groups[g + 1];
-    const word = high ? i32.or(low, i32.shl(bitsOf(high), i32.const(GROUP))) : low;
-    statements.push(i32.store(g * 2, 4, local.get(row, type), word, '0'));
+    const next = groups[g + 1];
+    if (first % (2 * GROUP) === 0 && next?.first === first + GROUP) {
+      const word = i32.or(low, i32.shl(bitsOf(next), i32.const(GROUP)));
+      statements.push(i32.store(first >>> 3, 4, at(), word, '0'));
+      g++;
+    } else statements.push(storeHalf(module, at(), first, low, program.outputs.length));
   }
   return statements;
+}
+
+/**
+ * Stores sixteen bits of the response row, from bit `first` on. Where they are the last, the rest of
+ * their word becomes 0.
+ */
+export function storeHalf(
+  { i32 }: binaryen.Module,
+  row: binaryen.ExpressionRef,
+  first: number,
+  bits: binaryen.ExpressionRef,
+  outputCount: number,
+): binaryen.ExpressionRef {
+  const isLast = first % (2 * GROUP) === 0 && first + GROUP >= outputCount;
+  return isLast
+    ? i32.store(first >>> 3, 4, row, bits, '0')
+    : i32.store16(first >>> 3, 2, row, bits, '0');
 }

@@ -40,6 +40,8 @@ export interface RunPlace {
   /** Where the number of each cycle's code stands, a byte each, and how many there are. */
   readonly patternAt: number;
   readonly patternLength: number;
+  /** Makes what stands behind each cycle, of code that ends the run; see `compareState`. */
+  readonly afterCycle?: (leave: () => binaryen.ExpressionRef) => readonly binaryen.ExpressionRef[];
 }
 
 /**
@@ -70,6 +72,7 @@ export function runLoop(
     advance(RunLocal.Row, RunLocal.RowStep),
     advance(RunLocal.Response, RunLocal.ResponseStep),
     local.set(RunLocal.Left, i32.sub(get(RunLocal.Left), i32.const(1))),
+    ...(place.afterCycle?.(() => module.block(null, finish())) ?? []),
     module.br('cycle', get(RunLocal.Left)),
   ]);
   return module.block(null, [

@@ -6,6 +6,7 @@ import {
   type StateUpdate,
   UPDATE_WIDTH,
 } from '../logic/logic.js';
+import { mapWrite } from '../logic/writes.js';
 import { FIRST_INPUT, type Program, ProgramOp } from '../program/program.js';
 
 /**
@@ -32,7 +33,8 @@ export function buildProgram(
   return writer.finish();
 }
 
-class ProgramWriter {
+/** Writes operations one after another, with the inversions that their operands need. */
+export class ProgramWriter {
   readonly #logic: Logic;
   readonly #inverted: Uint8Array;
   readonly #op = new GrowableUint8(1024);
@@ -62,6 +64,7 @@ class ProgramWriter {
     this.#blockStart.push(0);
   }
 
+  /** Writes the operation of a node; those that it reads have been written before. */
   write(node: number): void {
     const { a, b, op } = this.#logic;
     const kept = this.#inverted[node]!;
@@ -76,16 +79,30 @@ class ProgramWriter {
       const parity = this.#keptParity(a[node]!) ^ this.#keptParity(b[node]!) ^ kept;
       const value = this.#append(ProgramOp.Xor, first, second, 0);
       this.#valueOf[node] = parity === 0 ? value : this.#append(ProgramOp.Not, value, 0, 0);
+    } else if (op[node]! >= LogicOp.Pack) {
+      this.#writeWord(node);
     } else {
       this.#writeMux(node, kept);
     }
   }
 
+  /** Ends the block at hand: what follows stands in the next one. */
   startBlock(): void {
     this.#blockStart.push(this.#op.length);
   }
 
-  finish(): Program {
+  /** Number of blocks so far, the one at hand included. */
+  get blockCount(): number {
+    return this.#blockStart.length;
+  }
+
+  /** The value that a literal has in the block at hand. */
+  value(literal: Literal): number {
+    return this.#literal(literal);
+  }
+
+  /** The program, whose response is the first `outputCount` outputs of the graph. */
+  finish(outputCount = this.#logic.outputs.length): Program {
     const logic = this.#logic;
     const { states } = logic;
     const stateInverted = new Uint8Array(states.length);
@@ -93,9 +110,13 @@ class ProgramWriter {
       if (logic.op[node] === LogicOp.State) stateInverted[logic.a[node]!] = this.#inverted[node]!;
     }
     const updates = this.#updates(stateInverted);
-    const outputs = Uint32Array.from(logic.outputs, (literal) => this.#literal(literal));
+    const shown = logic.outputs.slice(0, outputCount);
+    const outputs = Uint32Array.from(shown, (literal) => this.#literal(literal));
     const next = Uint32Array.from(logic.next, (literal, bit) =>
       this.#literal(literal ^ stateInverted[bit]!),
+    );
+    const writes = logic.writes.map((write) =>
+      mapWrite(write, (literal) => this.#literal(literal)),
     );
     const faults = logic.faults.map((fault) => ({ ...fault, when: this.#literal(fault.when) }));
     const last = this.#blockStart.length - 1;
@@ -114,6 +135,7 @@ class ProgramWriter {
       states,
       stateInverted,
       updates,
+      writes,
       faults,
       blockStart: this.#blockStart.take(),
     };
@@ -132,6 +154,19 @@ class ProgramWriter {
         gate: this.#literal(gate),
       };
     });
+  }
+
+  // Numbers, words and bits of words are kept as they are.
+  #writeWord(node: number): void {
+    const { op, a, b, c } = this.#logic;
+    const kind =
+      op[node] === LogicOp.Pack
+        ? ProgramOp.Pack
+        : op[node] === LogicOp.Load
+          ? ProgramOp.Load
+          : ProgramOp.Bit;
+    const [first, second] = [this.#literal(a[node]!), this.#literal(b[node]!)];
+    this.#valueOf[node] = this.#append(kind, first, second, c[node]!);
   }
 
   #writeMux(node: number, kept: number): void {

@@ -19,12 +19,11 @@ const HOTTEST = 1.2;
  * state bits are free. A move turns over one of these with all that follows from it. Simulated
  * annealing (S. Kirkpatrick, C. Gelatt, M. Vecchi, "Optimization by simulated annealing", Science
  * 220, 1983) keeps moves that lower the number of nodes needed inverted, and at first some others.
- * Returns 1 per inverted node. With `keepsStates` no state bit is inverted, since other graphs
- * share them.
+ * Returns 1 per inverted node. State bits in `kept` are not inverted; `true` stands for all of them.
  */
-export function choosePolarity(logic: Logic, keepsStates = false): Uint8Array {
+export function choosePolarity(logic: Logic, kept: boolean | Uint8Array = false): Uint8Array {
   const edges = new PolarityEdges(logic);
-  const moves = movesOf(logic, edges, keepsStates);
+  const moves = movesOf(logic, edges, kept);
   descend(edges, moves);
   const descended = { cost: edges.cost, inverted: edges.inverted.slice() };
   const turns = moves.reduce((sum, move) => sum + move.length, 1);
@@ -38,8 +37,9 @@ export function choosePolarity(logic: Logic, keepsStates = false): Uint8Array {
 /** Nodes that turn over together. */
 type Move = readonly number[];
 
-function movesOf(logic: Logic, edges: PolarityEdges, keepsStates: boolean): Move[] {
-  const fixed = keepsStates ? new Uint8Array(logic.states.length).fill(1) : gatedStates(logic);
+function movesOf(logic: Logic, edges: PolarityEdges, kept: boolean | Uint8Array): Move[] {
+  const fixed = kept === true ? new Uint8Array(logic.states.length).fill(1) : gatedStates(logic);
+  if (typeof kept === 'object') for (const [bit, flag] of kept.entries()) fixed[bit]! |= flag;
   const moves: Move[] = [];
   for (let node = 1; node < logic.nodeCount; node++) {
     const op = logic.op[node]!;

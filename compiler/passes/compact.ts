@@ -1,5 +1,6 @@
-import { FALSE, type Literal, type Logic, LogicOp } from '../logic/logic.js';
+import { type Literal, type Logic, LogicOp } from '../logic/logic.js';
 import { sinksOf } from '../logic/sinks.js';
+import { mapWrite } from '../logic/writes.js';
 
 /**
  * Removes nodes that nothing reads, and state bits that only remember an input nobody asks for.
@@ -70,7 +71,7 @@ function rebuilt(logic: Logic, live: Uint8Array, keptState: readonly boolean[]):
     else if (op[n] !== LogicOp.Zero) {
       a[n] = moved(logic.a[node]!);
       b[n] = moved(logic.b[node]!);
-      c[n] = op[n] === LogicOp.Mux ? moved(logic.c[node]!) : FALSE;
+      c[n] = op[n] === LogicOp.Mux ? moved(logic.c[node]!) : logic.c[node]!;
     }
   }
   return {
@@ -88,6 +89,7 @@ function rebuilt(logic: Logic, live: Uint8Array, keptState: readonly boolean[]):
       enable: moved(update.enable),
       gate: moved(update.gate),
     })),
+    writes: logic.writes.map((write) => mapWrite(write, moved)),
     faults: logic.faults.map((fault) => ({ ...fault, when: moved(fault.when) })),
   };
 }

@@ -1,4 +1,5 @@
 import { type Literal, type Logic, LogicOp } from '../logic/logic.js';
+import { writeLiterals } from '../logic/writes.js';
 
 /**
  * Who reads which node, and which of these reads need the inverse of what is kept.
@@ -67,6 +68,8 @@ function edgesOf(logic: Logic): { literals: Literal[]; readers: number[] } {
     const op = logic.op[node];
     if (op === LogicOp.State) stateNode[logic.a[node]!] = node;
     else if (op === LogicOp.Mux) add(logic.c[node]!, node);
+    else if (op === LogicOp.Pack) add(logic.a[node]!, node);
+    else if (op === LogicOp.Load) add(logic.b[node]!, node);
     else if (op === LogicOp.And) {
       add(logic.a[node]!, node);
       add(logic.b[node]!, node);
@@ -77,6 +80,7 @@ function edgesOf(logic: Logic): { literals: Literal[]; readers: number[] } {
     add(enable, 0);
     add(gate, 0);
   }
+  for (const literal of logic.writes.flatMap(writeLiterals)) add(literal, 0);
   for (const literal of logic.outputs) add(literal, 0);
   for (const fault of logic.faults) add(fault.when, 0);
   return { literals, readers };

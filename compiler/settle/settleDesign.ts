@@ -1,6 +1,7 @@
 import type { StimulusBlock } from '../../runtime/stream.js';
 import type { Design } from '../compile.js';
 import { Progress } from '../run/progress.js';
+import { chooseLanes } from './lanes/chooseLanes.js';
 import { reportOf } from './reportOf.js';
 import type { SettleReport } from './settleReport.js';
 import { SettleRun } from './settleRun.js';
@@ -40,12 +41,13 @@ export const MOST_HELD_CYCLES = 4096;
  *
  * The three-valued run proves what it knows, and knows too little where x meets x. The lanes show
  * what really differs, and are a sample where they agree. Throws RangeError for a three-valued
- * design and for lanes and cycles that are no such counts, and what the stimulus throws.
+ * design, for one with memories (words that are no registers) and for lanes and cycles that are no
+ * such counts, and what the stimulus throws.
  */
 export async function settleDesign(design: Design, request: SettleRequest): Promise<SettleReport> {
   checkRequest(design, request);
   const { cycles, lanes, seed } = request;
-  const run = new SettleRun(design, lanes, BigInt(seed));
+  const run = new SettleRun(design, await chooseLanes(design, lanes), lanes, BigInt(seed));
   const progress = new Progress(cycles);
   try {
     const row = await followStimulus(run, design, request, progress);
@@ -65,6 +67,7 @@ export async function settleDesign(design: Design, request: SettleRequest): Prom
 
 function checkRequest({ layout }: Design, { lanes, cycles }: SettleRequest): void {
   if (layout.threeValued) throw new RangeError('the design must be two-valued');
+  if (layout.memories.length > 0) throw new RangeError('the design must have no memories');
   if (!Number.isSafeInteger(lanes) || lanes < 2 || lanes > MOST_LANES) {
     throw new RangeError(`lanes are 2 to ${MOST_LANES}, got ${lanes}`);
   }

@@ -1,4 +1,4 @@
-import type { LaneFault } from './lanes/laneRunner.js';
+import type { LaneFault } from '../../runtime/laneEngine.js';
 import type { Step } from './memberCourse.js';
 import type { Continuation } from './repetition.js';
 

@@ -3,6 +3,7 @@ import { powerUpState } from '../circuit/powerUp.js';
 import { X } from '../circuit/values.js';
 import { type Design, programsOf } from '../compile.js';
 import { BytecodeEngine } from '../interpret/bytecodeEngine.js';
+import type { LaneMachine } from './lanes/laneMachine.js';
 import { LaneRunner } from './lanes/laneRunner.js';
 import { MemberCourse } from './memberCourse.js';
 import { type Moving, Repetition } from './repetition.js';
@@ -31,14 +32,14 @@ export class SettleRun {
   readonly #words: number;
   readonly #row: Uint32Array;
 
-  /** Lane i starts at `powerUpState(circuit, 'random', seed + i)`. */
-  constructor(design: Design, lanes: number, seed: bigint) {
+  /** Lane i of the machine starts at `powerUpState(circuit, 'random', seed + i)`. */
+  constructor(design: Design, machine: LaneMachine, lanes: number, seed: bigint) {
     const { circuit, layout, schedule } = design;
     const threeValued = { ...layout, threeValued: true };
     this.#engine = new BytecodeEngine(programsOf({ ...design, layout: threeValued }), threeValued);
     this.#words = layout.inputs.words;
     this.#row = new Uint32Array(rowStride(layout.inputs, true));
-    this.runner = new LaneRunner(programsOf(design), layout, lanes, (lane) =>
+    this.runner = new LaneRunner(machine, layout, lanes, (lane) =>
       powerUpState(circuit, 'random', seed + BigInt(lane)),
     );
     this.state = powerUpState(circuit, 'unknown');

@@ -28,6 +28,7 @@ function narrowStages(stages: number, width: number): Logic {
     next: [],
     states: [],
     updates: [],
+    writes: [],
     faults: [],
   };
 }

@@ -22,7 +22,7 @@ const holds = (law: (logic: Logic, seed: number) => void): void =>
     fc.property(circuits, fc.boolean(), fc.nat(), (circuit, threeValued, seed) =>
       law(logicOf(circuit, { threeValued }), seed),
     ),
-    { seed: 42, numRuns: 150 },
+    { seed: 42, numRuns: 90 },
   );
 
 describe('compact', () => {
@@ -105,7 +105,7 @@ describe('groupRegisters', () => {
         });
         updates += grouped.updates.length;
       }),
-      { seed: 43, numRuns: 150 },
+      { seed: 43, numRuns: 90 },
     );
     expect(updates).toBeGreaterThan(150);
   });

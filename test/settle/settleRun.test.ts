@@ -1,7 +1,8 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import type { Circuit } from '../../compiler/circuit/circuit.js';
-import { designOf } from '../../compiler/compile.js';
+import { designOf, programsOf } from '../../compiler/compile.js';
+import { InterpretedLanes } from '../../compiler/settle/lanes/interpretedLanes.js';
 import { SettleRun } from '../../compiler/settle/settleRun.js';
 import { type RandomCircuitOptions, randomCircuit } from '../support/randomCircuit.js';
 import { randomRows } from '../support/responses.js';
@@ -13,7 +14,8 @@ const LANES = 12;
 function contradictions(circuit: Circuit, seed: number): string[] {
   const design = designOf(circuit);
   const { inputs, stateNames } = design.layout;
-  const run = new SettleRun(design, LANES, BigInt(seed));
+  const machine = new InterpretedLanes(programsOf(design), 1);
+  const run = new SettleRun(design, machine, LANES, BigInt(seed));
   const rows = randomRows(design.layout, seed, CYCLES);
   const found: string[] = [];
   for (let cycle = 0; cycle < CYCLES; cycle++) {

@@ -4,7 +4,7 @@ import { ProgramOp } from '../../program/program.js';
 export const BLOCK_WORDS = 4;
 
 /** Lanes in a block. */
-export const BLOCK_LANES = BLOCK_WORDS * 32;
+export const BLOCK_LANES = 128;
 
 /**
  * Runs operations of one kind, each on a block of lanes.

@@ -3,9 +3,16 @@ import { describe, expect, it } from 'vitest';
 import type { Circuit } from '../../../compiler/circuit/circuit.js';
 import { findClockPorts } from '../../../compiler/circuit/clockPorts.js';
 import { powerUpState } from '../../../compiler/circuit/powerUp.js';
-import { type CompileOptions, designOf, programsOf } from '../../../compiler/compile.js';
+import {
+  type CompileOptions,
+  type Design,
+  designOf,
+  programsOf,
+} from '../../../compiler/compile.js';
 import { BytecodeEngine } from '../../../compiler/interpret/bytecodeEngine.js';
 import { ReferenceEngine } from '../../../compiler/interpret/reference/referenceEngine.js';
+import { InterpretedLanes } from '../../../compiler/settle/lanes/interpretedLanes.js';
+import type { LaneMachine } from '../../../compiler/settle/lanes/laneMachine.js';
 import { LaneRunner } from '../../../compiler/settle/lanes/laneRunner.js';
 import { RunFault } from '../../../runtime/engine.js';
 import { rowStride } from '../../../runtime/layout.js';
@@ -16,6 +23,10 @@ import { smallCircuit } from '../../support/smallCircuit.js';
 
 const SEED = 20260812;
 const CYCLES = 20;
+
+/** What interprets so many lanes of a design. */
+const machineOf = (design: Design, lanes: number): LaneMachine =>
+  new InterpretedLanes(programsOf(design), Math.ceil(lanes / 128));
 
 type EngineMaker = 'bytecode' | 'reference';
 
@@ -34,7 +45,7 @@ function expectLanesAsEngine(
   const programs = programsOf(design);
   const mode = design.layout.threeValued ? 'unknown' : 'random';
   const powerUp = (lane: number) => powerUpState(circuit, mode, seed + lane);
-  const runner = new LaneRunner(programs, design.layout, lanes, powerUp);
+  const runner = new LaneRunner(machineOf(design, lanes), design.layout, lanes, powerUp);
   const engines = Array.from({ length: lanes }, (_, lane) => {
     const engine =
       maker === 'bytecode'
@@ -131,7 +142,7 @@ describe('a lane runner', () => {
   });
   const runnerFrom = (circuit: Circuit, ...states: number[][]): LaneRunner => {
     const design = designOf(circuit);
-    return new LaneRunner(programsOf(design), design.layout, states.length, (lane) =>
+    return new LaneRunner(machineOf(design, states.length), design.layout, states.length, (lane) =>
       Uint8Array.from(states[lane]!),
     );
   };
@@ -198,9 +209,10 @@ describe('a lane runner', () => {
   it('refuses lanes that are no count, and states that an engine refuses', () => {
     const design = designOf(held);
     const make = (lanes: number, state: number[]) => () =>
-      new LaneRunner(programsOf(design), design.layout, lanes, () => Uint8Array.from(state));
-    expect(make(0, [0, 0])).toThrow(new RangeError('lanes are a count from 1 on, got 0'));
+      new LaneRunner(machineOf(design, 2), design.layout, lanes, () => Uint8Array.from(state));
+    expect(make(0, [0, 0])).toThrow(new RangeError('lanes are a count from 1 to 128, got 0'));
     expect(make(1.5, [0, 0])).toThrow(RangeError);
+    expect(make(129, [0, 0])).toThrow(RangeError);
     expect(make(2, [0])).toThrow('expected 2 state values, got 1');
     expect(make(2, [0, 2])).toThrow('q takes 0 to 1, got 2');
   });

@@ -1,0 +1,2 @@
+/** Bytes of a vector. */
+export const LANES = 16;

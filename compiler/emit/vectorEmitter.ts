@@ -1,0 +1,245 @@
+import type binaryen from 'binaryen';
+import { firstState } from '../program/program.js';
+import { stepOperands, type VectorCode, VectorOp, type VectorSink } from '../program/vectorCode.js';
+import type { Emission, Pointers } from './blockEmitter.js';
+import { emitInputLanes } from './inputLanes.js';
+import { LANES } from './lanes.js';
+import { storeHalf } from './packOutputs.js';
+import type { StepHomes, VectorPart } from './vectorParts.js';
+
+/** Nested expressions stay below this depth, since module writers recurse over them. */
+const DEPTH_LIMIT = 24;
+
+/** The locals that vector code works with: those of every block, and the response row. */
+export interface VectorPointers extends Pointers {
+  readonly response: number;
+}
+
+/** The types of the loaded library that vector code needs. */
+export interface VectorTypes {
+  readonly i32: binaryen.Type;
+  readonly v128: binaryen.Type;
+}
+
+/**
+ * Emits vector steps as straight-line code. A result read once becomes part of its reader's
+ * expression; others get a local.
+ */
+export class VectorEmitter {
+  readonly statements: binaryen.ExpressionRef[] = [];
+  /** Locals of 128 bits in use, from `firstLocal` on. */
+  localCount = 0;
+  readonly #emission: Emission;
+  readonly #code: VectorCode;
+  readonly #types: VectorTypes;
+  readonly #pointers: VectorPointers;
+  readonly #homes: StepHomes;
+  readonly #firstLocal: number;
+  readonly #reads = new Map<number, number>();
+  readonly #locals = new Map<number, number>();
+  readonly #pending = new Map<number, { code: binaryen.ExpressionRef; depth: number }>();
+
+  constructor(
+    emission: Emission,
+    types: VectorTypes,
+    pointers: VectorPointers,
+    homes: StepHomes,
+    firstLocal: number,
+  ) {
+    this.#emission = emission;
+    this.#code = emission.program.vectors!;
+    this.#types = types;
+    this.#pointers = pointers;
+    this.#homes = homes;
+    this.#firstLocal = firstLocal;
+  }
+
+  /** Emits the steps of a part, and the sinks if it is the last part. */
+  emit(
+    { start, end }: VectorPart,
+    sinks: { states: readonly VectorSink[]; outputs: readonly VectorSink[] },
+  ): void {
+    const { steps } = this.#code;
+    const count = (step: number, reads = 1): void => {
+      this.#reads.set(step, (this.#reads.get(step) ?? 0) + reads);
+    };
+    for (let step = start; step < end; step++) {
+      const { op, a, b, c } = steps[step]!;
+      for (const operand of [a, b, c].slice(0, stepOperands[op])) count(operand);
+      // A multiplexer's expression reads its 0-operand twice.
+      if (op === VectorOp.Mux) count(b);
+    }
+    for (const { step } of [...sinks.states, ...sinks.outputs]) count(step);
+    for (let step = start; step < end; step++) this.#emitStep(step);
+    for (const sink of sinks.states) this.#storeState(sink);
+    for (const sink of sinks.outputs) this.#storeOutputs(sink);
+  }
+
+  #emitStep(step: number): void {
+    const { op } = this.#code.steps[step]!;
+    // What stands in memory is loaded where it is read.
+    if (op === VectorOp.State || op === VectorOp.Slot) return;
+    const slot = this.#homes.slotOf[step]!;
+    const reads = this.#reads.get(step) ?? 0;
+    if (reads === 0 && slot < 0) return;
+    const { code, depth } = this.#expression(step);
+    if (slot >= 0) {
+      const kept = reads > 0 ? this.#toLocal(step, code) : code;
+      this.#store(this.#emission.area.slots + slot * LANES, kept);
+    } else if (reads > 1 || depth >= DEPTH_LIMIT) this.#setLocal(step, code);
+    else this.#pending.set(step, { code, depth });
+  }
+
+  #value(step: number): { code: binaryen.ExpressionRef; depth: number } {
+    const pending = this.#pending.get(step);
+    if (pending !== undefined) {
+      this.#pending.delete(step);
+      return pending;
+    }
+    const held = this.#locals.get(step);
+    if (held !== undefined) {
+      return { code: this.#emission.module.local.get(held, this.#types.v128), depth: 0 };
+    }
+    const loaded = { code: this.#load(step), depth: 2 };
+    if ((this.#reads.get(step) ?? 0) <= 1) return loaded;
+    return { code: this.#toLocal(step, loaded.code), depth: 0 };
+  }
+
+  #load(step: number): binaryen.ExpressionRef {
+    const { v128 } = this.#emission.module;
+    const { op, a } = this.#code.steps[step]!;
+    if (op === VectorOp.State) return v128.load(a, 1, this.#at(this.#pointers.current), '0');
+    if (op === VectorOp.Splat) return this.#splat(a);
+    const slot = op === VectorOp.Slot ? a : this.#homes.slotOf[step]!;
+    const address = this.#emission.area.slots + slot * LANES;
+    return v128.load(address, 4, this.#at(this.#pointers.next), '0');
+  }
+
+  #expression(step: number): { code: binaryen.ExpressionRef; depth: number } {
+    const { module } = this.#emission;
+    const { v128, i8x16 } = module;
+    const { op, a, b, c, lanes } = this.#code.steps[step]!;
+    if (op === VectorOp.Splat) return { code: this.#splat(a), depth: 2 };
+    if (op === VectorOp.Inputs) {
+      const row = () => this.#at(this.#pointers.row);
+      return { code: emitInputLanes(module, lanes, row), depth: 6 };
+    }
+    if (op === VectorOp.Mux) return this.#mux(a, b, c);
+    const left = this.#value(a);
+    if (op === VectorOp.Invert) {
+      const mask = constant(
+        module,
+        lanes.map((lane) => (lane === 1 ? 0xff : 0)),
+      );
+      return { code: v128.xor(left.code, mask), depth: left.depth + 1 };
+    }
+    if (op === VectorOp.Shuffle && a === b) {
+      const held = this.#again(left, a);
+      return { code: i8x16.shuffle(held.first, held.second, laneBytes(lanes)), depth: 1 };
+    }
+    const right = this.#value(b);
+    const depth = Math.max(left.depth, right.depth) + 1;
+    const code =
+      op === VectorOp.Shuffle
+        ? i8x16.shuffle(left.code, right.code, laneBytes(lanes))
+        : op === VectorOp.And
+          ? v128.and(left.code, right.code)
+          : op === VectorOp.AndNot
+            ? v128.andnot(left.code, right.code)
+            : op === VectorOp.Or
+              ? v128.or(left.code, right.code)
+              : v128.xor(left.code, right.code);
+    return { code, depth };
+  }
+
+  // A shuffle of one vector names it twice.
+  #again(
+    { code }: { code: binaryen.ExpressionRef },
+    step: number,
+  ): { first: binaryen.ExpressionRef; second: binaryen.ExpressionRef } {
+    const { local } = this.#emission.module;
+    const held = this.#locals.get(step) ?? this.#setLocal(step, code);
+    const get = () => local.get(held, this.#types.v128);
+    return { first: get(), second: get() };
+  }
+
+  // zero ^ (select & (one ^ zero))
+  #mux(select: number, zero: number, one: number) {
+    const { v128 } = this.#emission.module;
+    const first = this.#value(zero);
+    const other = this.#value(one);
+    const again = this.#value(zero);
+    const by = this.#value(select);
+    const code = v128.xor(first.code, v128.and(by.code, v128.xor(other.code, again.code)));
+    return { code, depth: Math.max(first.depth, other.depth, by.depth) + 3 };
+  }
+
+  #splat(value: number): binaryen.ExpressionRef {
+    const { module, program, area } = this.#emission;
+    const { v128, i8x16, i32 } = module;
+    if (value < 2) return constant(module, new Array<number>(LANES).fill(value));
+    const input = value - 2;
+    const states = firstState(program);
+    if (value >= states) {
+      return v128.load8_splat(value - states, 1, this.#at(this.#pointers.current), '0');
+    }
+    if (input >= this.#code.rowInputs) {
+      const lane = area.slots + input - this.#code.rowInputs;
+      return v128.load8_splat(lane, 1, this.#at(this.#pointers.next), '0');
+    }
+    const byte = i32.load8_u(input >>> 3, 1, this.#at(this.#pointers.row), '0');
+    return i8x16.splat(input % 8 === 0 ? byte : i32.shr_u(byte, i32.const(input % 8)));
+  }
+
+  #storeState({ step, invert, to }: VectorSink): void {
+    const { v128, local } = this.#emission.module;
+    const { code } = this.#value(step);
+    const pointer = local.get(this.#pointers.next, this.#types.i32);
+    this.statements.push(v128.store(to, 1, pointer, invert ? v128.not(code) : code, '0'));
+  }
+
+  #storeOutputs({ step, invert, to }: VectorSink): void {
+    const { module, program } = this.#emission;
+    const { i16x8, i8x16, i32, v128 } = module;
+    const count = Math.min(LANES, program.outputs.length - to);
+    const { code } = this.#value(step);
+    // Only the top bit of each byte counts, and bit 0 gets there in wider lanes too.
+    const bits = i8x16.bitmask(i16x8.shl(invert ? v128.not(code) : code, i32.const(7)));
+    const known = count === LANES ? bits : i32.and(bits, i32.const((1 << count) - 1));
+    const row = this.#at(this.#pointers.response);
+    this.statements.push(storeHalf(module, row, to, known, program.outputs.length));
+  }
+
+  #at(pointer: number): binaryen.ExpressionRef {
+    return this.#emission.module.local.get(pointer, this.#types.i32);
+  }
+
+  #setLocal(step: number, code: binaryen.ExpressionRef): number {
+    const number = this.#firstLocal + this.localCount++;
+    this.#locals.set(step, number);
+    this.statements.push(this.#emission.module.local.set(number, code));
+    return number;
+  }
+
+  #toLocal(step: number, code: binaryen.ExpressionRef): binaryen.ExpressionRef {
+    const number = this.#setLocal(step, code);
+    return this.#emission.module.local.get(number, this.#types.v128);
+  }
+
+  #store(offset: number, code: binaryen.ExpressionRef): void {
+    const { v128 } = this.#emission.module;
+    this.statements.push(v128.store(offset, 4, this.#at(this.#pointers.next), code, '0'));
+  }
+}
+
+/** A vector constant. */
+export function constant(
+  module: binaryen.Module,
+  bytes: readonly number[],
+): binaryen.ExpressionRef {
+  return module.v128.const(bytes as number[]);
+}
+
+// A lane that does not matter stays where it is.
+const laneBytes = (lanes: readonly number[]): number[] =>
+  lanes.map((lane, to) => (lane < 0 ? to : lane));

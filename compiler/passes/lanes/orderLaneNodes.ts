@@ -1,0 +1,201 @@
+import { type Logic, LogicOp } from '../../logic/logic.js';
+import { sinksOf } from '../../logic/sinks.js';
+import { orderSinks } from '../orderSinks.js';
+import { eachOperand, Users } from './users.js';
+
+/** Touches after which a value counts as gone from the registers and from what is kept. */
+const RECENT = 60;
+/** Sinks that are weighed against each other at a time, the ones found last. */
+const CANDIDATES = 24;
+/** Users that are looked at to find the sinks that a value leads to. */
+const CLIMB = 60;
+/** Values with more users than this lead everywhere, and so nowhere. */
+const MOST_USERS = 200;
+/** Most operations that a sink may still need for being taken out of turn. */
+const LARGEST = 16;
+/** What one more operation counts for, where a value to be fetched counts 1. */
+const OPERATION = 0.2;
+
+/**
+ * Lists the operation nodes of a logic graph in the order to compute them for lanes, where every
+ * value takes a vector register, and fetching one costs more than what is done with it.
+ *
+ * Next comes the small sink near by (one that reads what has just been touched) that finds most of
+ * what it reads at hand, else the next one of `orderSinks`. Within a sink's cone the operand that
+ * needs more registers comes first (R. Sethi, J. D. Ullman, "The generation of optimal code for
+ * arithmetic expressions", JACM 17(4), 1970).
+ */
+export function orderLaneNodes(logic: Logic): Uint32Array {
+  const ordering = new Ordering(logic);
+  for (const sink of orderSinks(logic)) {
+    ordering.takeNear();
+    ordering.take(sink >>> 1);
+  }
+  ordering.takeNear();
+  return Uint32Array.from(ordering.order);
+}
+
+class Ordering {
+  readonly order: number[] = [];
+  readonly #logic: Logic;
+  readonly #users: Users;
+  readonly #needs: Float64Array;
+  readonly #isSink: Uint8Array;
+  readonly #isDone: Uint8Array;
+  /** Per node, when it was last made or read. */
+  readonly #touchedAt: Float64Array;
+  #touches = 0;
+  /** Values touched for the sink that is taken, each once. */
+  readonly #touched: number[] = [];
+  readonly #touchedFor: Uint32Array;
+  #takes = 0;
+  #candidates: number[] = [];
+  readonly #isCandidate: Uint8Array;
+  readonly #visit: Uint32Array;
+  #visits = 0;
+  /** Room for what one walk still has to visit. */
+  readonly #stack = new Uint32Array(3 * LARGEST + 4);
+
+  constructor(logic: Logic) {
+    const { nodeCount } = logic;
+    this.#logic = logic;
+    this.#users = new Users(logic);
+    this.#needs = registerNeeds(logic);
+    this.#isSink = new Uint8Array(nodeCount);
+    this.#isDone = new Uint8Array(nodeCount);
+    this.#touchedAt = new Float64Array(nodeCount).fill(Number.NEGATIVE_INFINITY);
+    this.#isCandidate = new Uint8Array(nodeCount);
+    this.#visit = new Uint32Array(nodeCount);
+    this.#touchedFor = new Uint32Array(nodeCount);
+    for (const sink of sinksOf(logic)) this.#isSink[sink >>> 1] = 1;
+    // What is no operation is there from the start.
+    for (let node = 0; node < nodeCount; node++) {
+      if (logic.op[node]! < LogicOp.And) this.#isDone[node] = 1;
+    }
+  }
+
+  /** Takes sinks near by as long as there are any. */
+  takeNear(): void {
+    for (let sink = this.#best(); sink >= 0; sink = this.#best()) this.take(sink);
+  }
+
+  /** Computes what a sink still needs, and looks around for sinks that read the same. */
+  take(sink: number): void {
+    if (this.#isDone[sink] === 1) return;
+    this.#takes++;
+    const stack = [sink];
+    while (stack.length > 0) {
+      const node = stack[stack.length - 1]!;
+      const depth = stack.length;
+      if (this.#isDone[node] === 0) this.#pushMissing(node, stack);
+      if (stack.length > depth) continue;
+      stack.pop();
+      if (this.#isDone[node] === 1) continue;
+      this.#isDone[node] = 1;
+      this.order.push(node);
+      const { op, a, b, c } = this.#logic;
+      this.#touch(a[node]! >>> 1);
+      this.#touch(b[node]! >>> 1);
+      if (op[node] === LogicOp.Mux) this.#touch(c[node]! >>> 1);
+      this.#touch(node);
+    }
+    for (const node of this.#touched) this.#findCandidates(node);
+    this.#touched.length = 0;
+  }
+
+  // Pushes the operands that are not there yet, the one that needs most registers last.
+  #pushMissing(node: number, stack: number[]): void {
+    const from = stack.length;
+    eachOperand(this.#logic, node, (operand) => {
+      if (this.#isDone[operand] === 1) return;
+      stack.push(operand);
+      for (let i = stack.length - 1; i > from; i--) {
+        const [below, above] = [stack[i - 1]!, stack[i]!];
+        if (this.#needs[below]! <= this.#needs[above]!) break;
+        [stack[i - 1], stack[i]] = [above, below];
+      }
+    });
+  }
+
+  #touch(node: number): void {
+    // Looked around from once for each sink.
+    if (this.#touchedFor[node] !== this.#takes) this.#touched.push(node);
+    this.#touchedFor[node] = this.#takes;
+    this.#touchedAt[node] = ++this.#touches;
+  }
+
+  // Climbs from a value to the sinks that it leads to.
+  #findCandidates(from: number): void {
+    const stack = [from];
+    let left = CLIMB;
+    for (let node = stack.pop(); node !== undefined && left > 0; node = stack.pop()) {
+      const [start, end] = [this.#users.start[node]!, this.#users.start[node + 1]!];
+      if (end - start > MOST_USERS) continue;
+      left -= end - start;
+      for (let i = start; i < end; i++) {
+        const user = this.#users.user[i]!;
+        if (this.#isDone[user] === 1) continue;
+        stack.push(user);
+        if (this.#isSink[user] === 0 || this.#isCandidate[user] === 1) continue;
+        this.#isCandidate[user] = 1;
+        this.#candidates.push(user);
+      }
+    }
+  }
+
+  #best(): number {
+    this.#pruneCandidates();
+    let best = -1;
+    let least = Number.POSITIVE_INFINITY;
+    for (const sink of this.#candidates) {
+      const cost = this.#cost(sink);
+      if (cost < least) [best, least] = [sink, cost];
+    }
+    return best;
+  }
+
+  #pruneCandidates(): void {
+    const open = this.#candidates.filter((sink) => this.#isDone[sink] === 0);
+    const dropped = open.splice(0, Math.max(0, open.length - CANDIDATES));
+    for (const sink of dropped) this.#isCandidate[sink] = 0;
+    this.#candidates = open;
+  }
+
+  // What it takes to compute a sink now: less for what is at hand, infinite beyond `LARGEST`.
+  #cost(sink: number): number {
+    const visit = ++this.#visits;
+    const stack = this.#stack;
+    stack[0] = sink;
+    let [size, cost, operations] = [1, 0, 0];
+    const { op, a, b, c } = this.#logic;
+    while (size > 0) {
+      const node = stack[--size]!;
+      if (node === 0 || this.#visit[node] === visit) continue;
+      this.#visit[node] = visit;
+      if (this.#isDone[node] === 1) {
+        cost += this.#touches - this.#touchedAt[node]! < RECENT ? -1 : 1;
+        continue;
+      }
+      operations++;
+      if (operations > LARGEST) return Number.POSITIVE_INFINITY;
+      cost += OPERATION;
+      stack[size++] = a[node]! >>> 1;
+      stack[size++] = b[node]! >>> 1;
+      if (op[node] === LogicOp.Mux) stack[size++] = c[node]! >>> 1;
+    }
+    return cost;
+  }
+}
+
+// Registers that each node's expression needs, as if it shared nothing.
+function registerNeeds(logic: Logic): Float64Array {
+  const needs = new Float64Array(logic.nodeCount).fill(1);
+  for (let node = 1; node < logic.nodeCount; node++) {
+    if (logic.op[node]! < LogicOp.And) continue;
+    const each: number[] = [];
+    eachOperand(logic, node, (operand) => each.push(needs[operand]!));
+    each.sort((p, q) => q - p);
+    needs[node] = Math.max(...each.map((need, held) => need + held));
+  }
+  return needs;
+}

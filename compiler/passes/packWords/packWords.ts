@@ -1,0 +1,273 @@
+import {
+  FALSE,
+  type Literal,
+  type Logic,
+  LogicOp,
+  type LogicState,
+  nodeOf,
+} from '../../logic/logic.js';
+import { mapWrite } from '../../logic/writes.js';
+import type { VectorSink } from '../../program/vectorCode.js';
+import { growPacks } from './growPacks.js';
+import { LANES, type Packs, type Tuple } from './packs.js';
+import { areWorthIt, prunePacks } from './prunePacks.js';
+import { readersOf } from './readers.js';
+import { breakCircles, type Stages, stagesOf } from './units.js';
+import { type PlannedGather, VectorPlan } from './vectorPlan.js';
+
+/** A graph of which a part is computed sixteen bits at a time. */
+export interface PackedLogic {
+  /**
+   * The rest of the graph. Lanes of vectors are inputs behind those of the row; what vectors read
+   * of it is outputs behind those of the row. The state bits that vectors make stand first, sixteen
+   * of each pack, and their `next` is `FALSE`; so are outputs that vectors make.
+   */
+  readonly scalar: Logic;
+  /** Per state bit, 1 if it must be kept as it is. */
+  readonly fixedStates: Uint8Array;
+  readonly rowInputs: number;
+  readonly rowOutputs: number;
+  readonly plan: VectorPlan;
+  /** Gathers in the order of the outputs behind those of the row, an output for each lane. */
+  readonly gathers: readonly PlannedGather[];
+  readonly slots: readonly VectorSink[];
+  readonly states: readonly VectorSink[];
+  readonly outputs: readonly VectorSink[];
+  /** Per node of `scalar`, the stage that computes it. */
+  readonly stageOf: Uint16Array;
+  readonly stageCount: number;
+}
+
+/**
+ * Finds operations that can be made on sixteen bits at a time, with the state bits laid out to suit
+ * them, and takes them out of the graph. Undefined where nothing is worth it.
+ */
+export function packWords(logic: Logic): PackedLogic | undefined {
+  const packs = growPacks(logic);
+  prunePacks(packs);
+  breakCircles(packs);
+  prunePacks(packs);
+  if (!areWorthIt(packs)) return undefined;
+  return new Packing(packs).packed();
+}
+
+class Packing {
+  readonly #packs: Packs;
+  readonly #logic: Logic;
+  readonly #stages: Stages;
+  readonly #plan: VectorPlan;
+  /** Old state bit at each new place, -1 where none is. */
+  readonly #placement: number[] = [];
+  readonly #placeOfPack = new Map<number, number>();
+  readonly #slotOf = new Map<number, number>();
+  #stageCount: number;
+
+  constructor(packs: Packs) {
+    this.#packs = packs;
+    this.#logic = packs.logic;
+    this.#stages = stagesOf(packs);
+    this.#stageCount = this.#stages.count;
+    this.#placeStates();
+    this.#plan = new VectorPlan(packs, this.#stages, this.#placeOfPack);
+  }
+
+  packed(): PackedLogic {
+    const plan = this.#plan;
+    for (const pack of this.#stages.packOrder) plan.ofPack(pack);
+    const slots = this.#slots();
+    const states = this.#stateSinks();
+    const outputs = this.#outputSinks();
+    const { scalar, fixedStates } = this.#scalar(states, outputs);
+    return {
+      scalar,
+      fixedStates,
+      rowInputs: this.#logic.inputCount,
+      rowOutputs: this.#logic.outputs.length,
+      plan,
+      gathers: plan.gathers,
+      slots,
+      states,
+      outputs,
+      stageOf: this.#latestStages(scalar),
+      stageCount: this.#stageCount,
+    };
+  }
+
+  // Bits of packs stand first; of the others those that are outputs stand first.
+  #placeStates(): void {
+    const { states, a, outputs, op } = this.#logic;
+    const isPlaced = new Uint8Array(states.length);
+    for (const [number, pack] of this.#packs.standing()) {
+      if (pack.op !== LogicOp.State) continue;
+      this.#placeOfPack.set(number, this.#placement.length);
+      for (const node of pack.nodes) {
+        this.#placement.push(node < 0 ? -1 : a[node]!);
+        if (node >= 0) isPlaced[a[node]!] = 1;
+      }
+    }
+    const shown = outputs.map(nodeOf).filter((node) => op[node] === LogicOp.State);
+    for (const bit of [...shown.map((node) => a[node]!), ...states.keys()]) {
+      if (isPlaced[bit] === 1) continue;
+      this.#placement.push(bit);
+      isPlaced[bit] = 1;
+    }
+  }
+
+  // Packs whose lanes are read one by one keep them in slots.
+  #slots(): VectorSink[] {
+    const { start, reader } = readersOf(this.#logic);
+    const { nodeCount, states } = this.#logic;
+    const packedState = this.#packedStates();
+    const isSingle = (by: number): boolean =>
+      by < nodeCount
+        ? !this.#packs.isPacked(by)
+        : by < nodeCount + states.length
+          ? packedState[by - nodeCount] === 0
+          : true;
+    const sinks: VectorSink[] = [];
+    for (const number of this.#stages.packOrder) {
+      const pack = this.#packs.get(number)!;
+      if (pack.op === LogicOp.State) continue;
+      const isRead = pack.nodes.some(
+        (node) => node >= 0 && reader.subarray(start[node]!, start[node + 1]!).some(isSingle),
+      );
+      if (!isRead) continue;
+      const slot = this.#plan.newSlot();
+      this.#slotOf.set(number, slot);
+      // Scalar code that reads a lane, if only to pass it on inverted, stands in a later stage.
+      this.#stageCount = Math.max(this.#stageCount, this.#stages.ofPack[number]! + 2);
+      sinks.push({ step: this.#plan.ofPack(number).step, invert: false, to: slot });
+    }
+    return sinks;
+  }
+
+  #packedStates(): Uint8Array {
+    const packed = new Uint8Array(this.#logic.states.length);
+    for (const [, pack] of this.#packs.standing()) {
+      if (pack.op !== LogicOp.State) continue;
+      for (const node of pack.nodes) if (node >= 0) packed[this.#logic.a[node]!] = 1;
+    }
+    return packed;
+  }
+
+  #stateSinks(): VectorSink[] {
+    const sinks: VectorSink[] = [];
+    for (const [number, to] of this.#placeOfPack) {
+      const tuple = this.#packs.get(number)!.operands[0]!;
+      if (!this.#plan.needsVectors(tuple)) continue;
+      const { step, inverted } = this.#plan.together(tuple);
+      sinks.push({ step, invert: inverted, to });
+    }
+    return sinks;
+  }
+
+  #outputSinks(): VectorSink[] {
+    const { outputs } = this.#logic;
+    const sinks: VectorSink[] = [];
+    for (let first = 0; first < outputs.length; first += LANES) {
+      const group = outputs.slice(first, first + LANES);
+      const tuple: Tuple = [...group, ...new Array<number>(LANES - group.length).fill(-1)];
+      if (!this.#plan.needsVectors(tuple)) continue;
+      const { step, inverted } = this.#plan.together(tuple);
+      sinks.push({ step, invert: inverted, to: first });
+    }
+    return sinks;
+  }
+
+  #scalar(
+    stateSinks: readonly VectorSink[],
+    outputSinks: readonly VectorSink[],
+  ): { scalar: Logic; fixedStates: Uint8Array } {
+    const logic = this.#logic;
+    const moved = this.#mover();
+    const op = logic.op.slice();
+    const [a, b, c] = [logic.a.slice(), logic.b.slice(), logic.c.slice()];
+    const placeOf = new Uint32Array(logic.states.length);
+    for (const [place, bit] of this.#placement.entries()) if (bit >= 0) placeOf[bit] = place;
+    for (let node = 1; node < logic.nodeCount; node++) {
+      if (op[node] === LogicOp.State) a[node] = placeOf[a[node]!]!;
+      if (op[node]! < LogicOp.And) continue;
+      if (this.#packs.isPacked(node)) {
+        op[node] = LogicOp.Input;
+        a[node] = logic.inputCount + this.#laneAddress(node);
+        continue;
+      }
+      a[node] = moved(a[node]!);
+      b[node] = moved(b[node]!);
+      if (op[node] === LogicOp.Mux) c[node] = moved(c[node]!);
+    }
+    const byVector = new Uint8Array(this.#placement.length);
+    for (const { to } of stateSinks) byVector.fill(1, to, to + LANES);
+    const shown = new Uint8Array(logic.outputs.length);
+    for (const { to } of outputSinks) shown.fill(1, to, to + LANES);
+    const unused: LogicState = { role: 'unused', index: 0 };
+    const gathered = this.#plan.gathers.flatMap(({ literals }) =>
+      literals.map((literal) => (literal < 0 ? FALSE : moved(literal))),
+    );
+    const scalar: Logic = {
+      ...logic,
+      op,
+      a,
+      b,
+      c,
+      inputCount: logic.inputCount + this.#plan.slotCount * LANES,
+      outputs: [
+        ...logic.outputs.map((literal, i) => (shown[i] === 1 ? FALSE : moved(literal))),
+        ...gathered,
+      ],
+      next: this.#placement.map((bit, place) =>
+        bit < 0 || byVector[place] === 1 ? FALSE : moved(logic.next[bit]!),
+      ),
+      states: this.#placement.map((bit) => logic.states[bit] ?? unused),
+      writes: logic.writes.map((write) => mapWrite(write, moved)),
+      faults: logic.faults.map((fault) => ({ ...fault, when: moved(fault.when) })),
+    };
+    return { scalar, fixedStates: this.#fixedStates(scalar) };
+  }
+
+  // What vectors read or write is kept as it is.
+  #fixedStates(scalar: Logic): Uint8Array {
+    const fixed = new Uint8Array(scalar.states.length);
+    for (const place of this.#placeOfPack.values()) fixed.fill(1, place, place + LANES);
+    for (const source of this.#plan.splats.values()) {
+      if (!('literal' in source)) continue;
+      const node = nodeOf(source.literal);
+      if (scalar.op[node] === LogicOp.State) fixed[scalar.a[node]!] = 1;
+    }
+    return fixed;
+  }
+
+  // A lane that is kept inverted is read the other way round.
+  #mover(): (literal: Literal) => Literal {
+    const { packOf } = this.#packs;
+    return (literal) => {
+      const pack = packOf[nodeOf(literal)]!;
+      return pack >= 0 && this.#plan.ofPack(pack).inverted ? literal ^ 1 : literal;
+    };
+  }
+
+  // Lanes that nobody reads one by one have no slot: any address will do.
+  #laneAddress(node: number): number {
+    const slot = this.#slotOf.get(this.#packs.packOf[node]!) ?? 0;
+    return slot * LANES + this.#packs.laneOf[node]!;
+  }
+
+  // Each operation as late as its readers allow, so that few values are held over a stage.
+  #latestStages({ op, a, b, c, nodeCount }: Logic): Uint16Array {
+    const latest = new Uint16Array(nodeCount).fill(this.#stageCount - 1);
+    const lower = (literal: Literal, stage: number): void => {
+      const node = nodeOf(literal);
+      if (latest[node]! > stage) latest[node] = stage;
+    };
+    for (const { literals, stage } of this.#plan.gathers) {
+      for (const literal of literals) if (literal >= 0) lower(literal, stage);
+    }
+    for (let node = nodeCount - 1; node > 0; node--) {
+      if (op[node]! < LogicOp.And) continue;
+      lower(a[node]!, latest[node]!);
+      lower(b[node]!, latest[node]!);
+      if (op[node] === LogicOp.Mux) lower(c[node]!, latest[node]!);
+    }
+    return latest;
+  }
+}
