@@ -10,7 +10,8 @@ export interface Engine {
 
   /**
    * Sets every state element, in the order of `layout.stateNames`: 0, 1, or 2 for x (three-valued
-   * engines only). Throws RangeError for a wrong length or value.
+   * engines only). Memories take the contents they had at first. Throws RangeError for a wrong
+   * length or value.
    */
   reset(state: Uint8Array): void;
 
@@ -31,6 +32,54 @@ export interface Engine {
 
   /** The state elements after the cycles so far: 0, 1 or 2 for x, as for `reset`. */
   state(): Uint8Array;
+
+  /**
+   * The contents of all memories of `layout.memories`, in their order; see `memoryState.ts` for the
+   * bytes. Empty if there are none.
+   */
+  memoryState(): Uint8Array;
+
+  /**
+   * Sets the contents of all memories to what `memoryState` gave. Throws RangeError for a wrong
+   * length, and for bits that stand for nothing.
+   */
+  loadMemory(bytes: Uint8Array): void;
+
+  /** Where the run stands: `restore` goes on from there, on this engine or another one. */
+  save(): RunPoint;
+
+  /**
+   * Goes on from a point that an engine of the same circuit and clocks has saved, as that one would.
+   * Throws RangeError for what is no such point.
+   */
+  restore(point: RunPoint): void;
+}
+
+/** An engine that notices when a state comes again. */
+export interface MarkingEngine extends Engine {
+  /** Whether it can: generated code must have been made for it. */
+  readonly canMark: boolean;
+
+  /**
+   * Looks for the present state, memories included, from now on: after every `pace` cycles. Cycles
+   * of which the last ones are no multiple of it may follow. Throws RangeError where it cannot.
+   */
+  mark(pace: number): void;
+
+  /** Cycles from `mark` until the state first came again; undefined while it has not. */
+  readonly repeatedAfter: number | undefined;
+}
+
+/** Where a run stands between two cycles: all that decides how any engine of a circuit goes on. */
+export interface RunPoint {
+  /** As `Engine.state` gives it. */
+  readonly state: Uint8Array;
+  /** As `Engine.memoryState` gives it. */
+  readonly memory: Uint8Array;
+  /** The packed stimulus row of the cycle before; undefined at power-up. */
+  readonly before: Uint32Array | undefined;
+  /** Cycles done, modulo the length of the clocks' pattern (1 where all clocks tick together). */
+  readonly position: number;
 }
 
 /** Why a cycle has no result. */

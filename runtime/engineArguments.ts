@@ -45,3 +45,21 @@ export function checkState(layout: ModelLayout, state: Uint8Array): void {
   if (wrong < 0) return;
   throw new RangeError(`${stateNames[wrong]} takes 0 to ${highest}, got ${state[wrong]}`);
 }
+
+/** Checks the row of a point to go on from; throws RangeError for a wrong length. */
+export function checkBefore(layout: ModelLayout, before: Uint32Array | undefined): void {
+  const words = rowStride(layout.inputs, layout.threeValued);
+  if (before === undefined || before.length === words) return;
+  throw new RangeError(`expected a row of ${words} words, got ${before.length}`);
+}
+
+/** A copy of the last of the rows that `Engine.run` is called with. */
+export function lastRow(
+  layout: ModelLayout,
+  cycles: number,
+  stimulus: Uint32Array,
+  stimulusStride: number,
+): Uint32Array {
+  const start = (cycles - 1) * stimulusStride;
+  return stimulus.slice(start, start + rowStride(layout.inputs, layout.threeValued));
+}

@@ -38,6 +38,16 @@ export interface ModelLayout {
    * combinational loops remember.
    */
   readonly stateNames: readonly string[];
+  /** Memories that are no registers, in a fixed order; their contents are no part of `stateNames`. */
+  readonly memories: readonly MemoryLayout[];
+}
+
+/** A memory as the runtime sees it: `depth` words of `width` bits. */
+export interface MemoryLayout {
+  /** Full hierarchical name. */
+  readonly name: string;
+  readonly width: number;
+  readonly depth: number;
 }
 
 /** 32-bit words from one row to the next: one group, or two where x is possible. */

@@ -51,6 +51,18 @@ export class Signature {
     return hex(this.#high) + hex(this.#low);
   }
 
+  /** The two words from which `restore` goes on. */
+  save(): Uint32Array {
+    return Uint32Array.of(this.#high, this.#low);
+  }
+
+  /** Goes on from saved words. Throws RangeError unless there are two. */
+  restore(words: Uint32Array): void {
+    if (words.length !== 2) throw new RangeError(`expected two words, got ${words.length}`);
+    this.#high = words[0]! | 0;
+    this.#low = words[1]! | 0;
+  }
+
   #addWords(rows: Uint32Array, start: number, end: number): void {
     let high = this.#high;
     let low = this.#low;

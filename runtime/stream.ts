@@ -23,6 +23,14 @@ export interface ResponseBlock {
   readonly rows: Uint32Array;
 }
 
+/** A response together with the stimulus that it answers. */
+export interface RunBlock extends ResponseBlock {
+  /** Packed rows of the inputs, used again like `rows`. */
+  readonly stimulus: Uint32Array;
+  /** Words from one of them to the next; 0 where one row is held for all cycles. */
+  readonly stimulusStride: number;
+}
+
 /** How `runBlocks` runs. */
 export interface RunOptions {
   /**
@@ -32,6 +40,13 @@ export interface RunOptions {
   readonly cycles?: number;
   /** Whether anyone looks at the response; default true. */
   readonly response?: boolean;
+  /** Asked before each call of the engine: how many cycles it should have at most, at least 1. */
+  readonly pieceCycles?: () => number;
+  /**
+   * Goes on in the middle of a run: the number of cycles done, and the stimulus row of the last of
+   * them (undefined for none). The stimulus is what is left of it; `cycles` counts from the start.
+   */
+  readonly from?: { readonly cycle: number; readonly before: Uint32Array | undefined };
 }
 
 // Long enough that a call costs nothing beside its cycles, short enough for the cache and for
@@ -53,7 +68,7 @@ export async function* runBlocks(
   engine: Engine,
   stimulus: AsyncIterable<StimulusBlock> | Iterable<StimulusBlock>,
   options: RunOptions = {},
-): AsyncGenerator<ResponseBlock, void, undefined> {
+): AsyncGenerator<RunBlock, void, undefined> {
   const run = new BlockRun(engine, options);
   for await (const block of stimulus) {
     yield* run.advance(block);
@@ -67,7 +82,7 @@ export function* runBlocksSync(
   engine: Engine,
   stimulus: Iterable<StimulusBlock>,
   options: RunOptions = {},
-): Generator<ResponseBlock, void, undefined> {
+): Generator<RunBlock, void, undefined> {
   const run = new BlockRun(engine, options);
   for (const block of stimulus) {
     yield* run.advance(block);
@@ -109,10 +124,11 @@ class BlockRun {
   readonly #response: Uint32Array | undefined;
   readonly #responseStride: number;
   readonly #most: number;
+  readonly #pieceCycles: () => number;
   readonly #lastRow: Uint32Array;
   #cycle = 0;
 
-  constructor(engine: Engine, { cycles, response = true }: RunOptions) {
+  constructor(engine: Engine, { cycles, response = true, pieceCycles, from }: RunOptions) {
     if (cycles !== undefined && !(Number.isSafeInteger(cycles) && cycles >= 0)) {
       throw new RangeError(`cycles is a count, got ${cycles}`);
     }
@@ -121,8 +137,12 @@ class BlockRun {
     this.#wanted = cycles;
     this.#responseStride = rowStride(outputs, threeValued);
     this.#most = blockCycles(response ? this.#responseStride : 1);
+    this.#pieceCycles = pieceCycles ?? (() => this.#most);
     if (response) this.#response = new Uint32Array(this.#most * this.#responseStride);
     this.#lastRow = new Uint32Array(rowStride(inputs, threeValued));
+    if (from === undefined) return;
+    this.#cycle = from.cycle;
+    if (from.before !== undefined) this.#lastRow.set(from.before);
   }
 
   get isDone(): boolean {
@@ -130,7 +150,7 @@ class BlockRun {
   }
 
   /** Runs one block, cut to what is still wanted. */
-  *advance({ cycles, rows, stride }: StimulusBlock): Generator<ResponseBlock, void, undefined> {
+  *advance({ cycles, rows, stride }: StimulusBlock): Generator<RunBlock, void, undefined> {
     const left = this.#wanted === undefined ? cycles : this.#wanted - this.#cycle;
     const count = Math.min(cycles, left);
     // Kept now: the maker may reuse the array once all rows have been handed out.
@@ -139,38 +159,34 @@ class BlockRun {
       this.#lastRow.set(rows.subarray(last, last + this.#lastRow.length));
     }
     for (let done = 0; done < count; ) {
-      const step = Math.min(this.#most, count - done);
+      const step = Math.min(this.#most, this.#pieceCycles(), count - done);
       yield* this.#step(step, stride === 0 ? rows : rows.subarray(done * stride), stride);
       done += step;
     }
   }
 
   /** Runs what is still wanted with the inputs as they were last. */
-  *holdLast(): Generator<ResponseBlock, void, undefined> {
+  *holdLast(): Generator<RunBlock, void, undefined> {
     if (this.#wanted === undefined || this.isDone) return;
     const cycles = this.#wanted - this.#cycle;
     yield* this.advance({ cycles, rows: this.#lastRow, stride: 0 });
   }
 
-  *#step(
-    cycles: number,
-    rows: Uint32Array,
-    stride: number,
-  ): Generator<ResponseBlock, void, undefined> {
+  *#step(cycles: number, rows: Uint32Array, stride: number): Generator<RunBlock, void, undefined> {
     try {
       this.#engine.run(cycles, rows, stride, this.#response);
     } catch (error) {
       if (!(error instanceof RunFault)) throw error;
-      if (error.completed > 0) yield this.#block(error.completed);
+      if (error.completed > 0) yield this.#block(error.completed, rows, stride);
       throw new RunFault(this.#cycle, error);
     }
-    yield this.#block(cycles);
+    yield this.#block(cycles, rows, stride);
   }
 
-  #block(cycles: number): ResponseBlock {
+  #block(cycles: number, stimulus: Uint32Array, stimulusStride: number): RunBlock {
     const firstCycle = this.#cycle;
     this.#cycle += cycles;
     const rows = this.#response?.subarray(0, cycles * this.#responseStride) ?? new Uint32Array(0);
-    return { firstCycle, cycles, rows };
+    return { firstCycle, cycles, rows, stimulus, stimulusStride };
   }
 }

@@ -29,6 +29,10 @@ export function writeValue(
   at: number,
   unknownAt: number | undefined,
 ): number {
+  if (width === 1 && unknownAt === undefined) {
+    bytes[to] = ZERO + ((rows[at + (offset >>> 5)]! >>> (offset & 31)) & 1);
+    return to + 1;
+  }
   const hasX = unknownAt !== undefined && anyBit(rows, unknownAt, offset, width);
   let end = to;
   if (width > 1) {

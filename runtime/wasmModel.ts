@@ -9,6 +9,8 @@ export interface MemoryMap {
    * other. Each starts with one byte per state bit, of which bit 0 counts.
    */
   readonly areas: readonly [number, number];
+  /** The contents of the memories, as `Engine.memoryState` gives them. */
+  readonly contents: number;
   /** First byte free for stimulus and response rows. */
   readonly buffers: number;
 }
@@ -24,6 +26,8 @@ export interface WasmModel extends StateMap {
   readonly bytes: Uint8Array<ArrayBuffer>;
   readonly layout: ModelLayout;
   readonly memory: MemoryMap;
+  /** The state elements that it starts with, where it was made for one start. */
+  readonly start?: Uint8Array;
   /** The faults by number. */
   readonly faults: readonly Fault[];
 }

@@ -1,30 +1,11 @@
 import { type ModelLayout, rowStride } from '../layout.js';
-import { readBits } from '../rowBits.js';
 import type { ResponseBlock } from '../stream.js';
 import { formatValue } from '../valueText.js';
+import type { TableBytes } from './bytes/inputBytes.js';
 import { columnOf, type PortColumn } from './columns.js';
-import { hasFields, type TableBytes, TableInput } from './tableInput.js';
+import type { Departure, ResponseChecker } from './departure.js';
+import { hasFields, TableInput } from './tableInput.js';
 import { ValueParser } from './valueParser.js';
-
-/** A value that is not as expected, and where the expectation stands. */
-export interface Departure {
-  readonly cycle: number;
-  /** As the header of the table has it: a port or a part of one. */
-  readonly port: string;
-  /** As the table has it. */
-  readonly expected: string;
-  /** In the form of a response table. */
-  readonly actual: string;
-  readonly path: string;
-  readonly line: number;
-  readonly column: number;
-}
-
-/** `FILE:LINE:COL: cycle 12: y is 0x1f, expected 0x1e`. */
-export const departureText = (departure: Departure): string => {
-  const { path, line, column, cycle, port, actual, expected } = departure;
-  return `${path}:${line}:${column}: cycle ${cycle}: ${port} is ${actual}, expected ${expected}`;
-};
 
 /** Name of the column that tells a row's cycle. */
 const CYCLE = 'cycle';
@@ -36,7 +17,7 @@ const CYCLE = 'cycle';
  * column `cycle` its rows may be sparse, in ascending order; without one, row k is cycle k. An
  * empty field and `-` match anything, and so does a digit `-` in `0b…`; x matches x alone.
  */
-export class ExpectationChecker {
+export class ExpectationChecker implements ResponseChecker {
   readonly #input: TableInput;
   readonly #layout: ModelLayout;
   readonly #columns: readonly PortColumn[];
@@ -95,6 +76,13 @@ export class ExpectationChecker {
     return departures;
   }
 
+  async skipTo(cycle: number): Promise<void> {
+    while (this.#pending >= 0 || this.#take() || (await this.#advance())) {
+      if (this.#pending >= cycle) return;
+      this.#pending = -1;
+    }
+  }
+
   /**
    * The first cycle that the table tells of and the response did not reach, or undefined. Lets go
    * of the file.
@@ -103,6 +91,11 @@ export class ExpectationChecker {
     const isLeft = this.#pending >= 0 || (await this.#advance());
     await this.#input.close();
     return isLeft ? this.#pending : undefined;
+  }
+
+  /** Lets go of the file. */
+  close(): Promise<void> {
+    return this.#input.close();
   }
 
   async #advance(): Promise<boolean> {
@@ -152,14 +145,14 @@ export class ExpectationChecker {
         const text = `${column.name} is ${this.#expected(column)}: ${refusal}`;
         throw scanner.error(column.field, text);
       }
-      if (this.#matches(column, block.rows, at, unknownAt)) continue;
+      if (this.#parser.matches(column, block.rows, at, unknownAt)) continue;
+      const place = scanner.place(column.field);
       departures.push({
         cycle: this.#pending,
         port: column.name,
         expected: this.#expected(column),
         actual: formatValue(column, block.rows, at, unknownAt),
-        path: scanner.path,
-        ...scanner.place(column.field),
+        place: `${scanner.path}:${place.line}:${place.column}`,
       });
       if (departures.length === most) return;
     }
@@ -167,24 +160,6 @@ export class ExpectationChecker {
 
   #expected({ field }: PortColumn): string {
     return this.#input.scanner.text(field).trim();
-  }
-
-  #matches(
-    { offset, width }: PortColumn,
-    rows: Uint32Array,
-    at: number,
-    unknownAt: number | undefined,
-  ): boolean {
-    const { value, unknown, matters } = this.#parser;
-    for (let bit = 0; bit < width; bit += 32) {
-      const count = Math.min(32, width - bit);
-      const word = bit >>> 5;
-      const mask = matters[word]! & (count === 32 ? -1 : (1 << count) - 1);
-      if ((readBits(rows, at, offset + bit, count) ^ value[word]!) & mask) return false;
-      if (unknownAt === undefined) continue;
-      if ((readBits(rows, unknownAt, offset + bit, count) ^ unknown[word]!) & mask) return false;
-    }
-    return true;
   }
 }
 

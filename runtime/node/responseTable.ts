@@ -1,6 +1,7 @@
 import { type ModelLayout, rowStride } from '../layout.js';
 import type { ResponseBlock } from '../stream.js';
 import { longestValue, writeValue } from '../valueText.js';
+import { type ResponseChoice, ResponseChooser } from './responseChoice.js';
 
 const COMMA = 0x2c;
 const LF = 0x0a;
@@ -10,7 +11,8 @@ const LONGEST_REST = 17;
 const PIECE = 1 << 18;
 
 /**
- * Writes responses as comma-separated values: `cycle`, then the output ports in declaration order.
+ * Writes responses as comma-separated values: `cycle`, then the output ports in declaration order,
+ * or those chosen.
  *
  * One-bit ports are `0`, `1`, `x`, wider ones `0x…`, or `0b…` where a bit is x. Lines end in LF.
  */
@@ -19,18 +21,21 @@ export class ResponseTable {
   readonly #stride: number;
   readonly #longestRow: number;
   readonly #bytes: Uint8Array;
+  readonly #chooser: ResponseChooser;
 
-  constructor(layout: ModelLayout) {
+  /** Throws as `ResponseChooser` does. */
+  constructor(layout: ModelLayout, choice: ResponseChoice = {}) {
     this.#layout = layout;
+    this.#chooser = new ResponseChooser(layout, choice);
     this.#stride = rowStride(layout.outputs, layout.threeValued);
-    const widths = layout.outputs.ports.map((port) => longestValue(port.width) + 1);
+    const widths = this.#chooser.columns.map(({ width }) => longestValue(width) + 1);
     this.#longestRow = widths.reduce((sum, width) => sum + width, LONGEST_REST);
     this.#bytes = new Uint8Array(Math.max(PIECE, this.#longestRow));
   }
 
   /** The line of names. */
   header(): Uint8Array {
-    const names = this.#layout.outputs.ports.map((port) => quoted(port.name));
+    const names = this.#chooser.columns.map(({ name }) => quoted(name));
     return new TextEncoder().encode(`${['cycle', ...names].join(',')}\n`);
   }
 
@@ -38,22 +43,23 @@ export class ResponseTable {
   *rows({ firstCycle, cycles, rows }: ResponseBlock): Generator<Uint8Array, void, undefined> {
     let end = 0;
     for (let i = 0; i < cycles; i++) {
+      if (!this.#chooser.takes(firstCycle + i, rows, i * this.#stride)) continue;
       if (end + this.#longestRow > this.#bytes.length) {
         yield this.#bytes.subarray(0, end);
         end = 0;
       }
       end = this.#row(end, firstCycle + i, rows, i * this.#stride);
     }
-    yield this.#bytes.subarray(0, end);
+    if (end > 0) yield this.#bytes.subarray(0, end);
   }
 
   #row(start: number, cycle: number, rows: Uint32Array, at: number): number {
     const { outputs, threeValued } = this.#layout;
     const unknownAt = threeValued ? at + outputs.words : undefined;
     let end = writeDecimal(this.#bytes, start, cycle);
-    for (const port of outputs.ports) {
+    for (const column of this.#chooser.columns) {
       this.#bytes[end++] = COMMA;
-      end = writeValue(this.#bytes, end, port, rows, at, unknownAt);
+      end = writeValue(this.#bytes, end, column, rows, at, unknownAt);
     }
     this.#bytes[end++] = LF;
     return end;

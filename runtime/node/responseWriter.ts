@@ -1,76 +1,74 @@
-import {
-  closeSync,
-  existsSync,
-  openSync,
-  realpathSync,
-  renameSync,
-  rmSync,
-  statSync,
-  writeSync,
-} from 'node:fs';
-import { basename, dirname, join } from 'node:path';
 import type { ModelLayout } from '../layout.js';
 import type { ResponseBlock } from '../stream.js';
+import type { ByteSink } from './bytes/byteSink.js';
+import { openSink } from './bytes/openSink.js';
+import { formOf, type ValueForm } from './fileForm.js';
+import { PackedResponse } from './packed/packedResponse.js';
+import type { ResponseChoice } from './responseChoice.js';
 import { ResponseTable } from './responseTable.js';
 
+/** How a response is written. */
+export interface ResponseWriterOptions extends ResponseChoice {
+  /** `csv` or `packed`; by the ending of the file unless given. */
+  readonly form?: ValueForm;
+}
+
 /**
- * Writes a response table to a file that appears all at once.
+ * Writes a response to a file that appears all at once: a run that fails leaves it as it was.
  *
- * Rows go to a hidden file beside the target, which `finish` renames, so that a run that fails
- * leaves the target as it was. What is no plain file (a terminal, a pipe) is written directly.
- * Call `finish` or `discard` at the end. All methods throw what the file system throws.
+ * The file is a table, or packed rows where its ending is `.rows`, and compressed where that is
+ * followed by `.gz`. Standard output (`-`) and pipes are written at the pace of who reads them.
+ * Call `keep` or `discard` at the end. All methods throw what the file system throws, and
+ * `ReaderGone` where a pipe is not read any more.
  */
 export class ResponseWriter {
-  readonly #table: ResponseTable;
-  readonly #target: string;
-  readonly #partial: string | undefined;
-  #file: number | undefined;
+  readonly #form: ResponseTable | PackedResponse;
+  readonly #sink: ByteSink;
 
-  constructor(path: string, layout: ModelLayout) {
-    this.#table = new ResponseTable(layout);
-    const exists = existsSync(path);
-    const isPlain = !exists || statSync(path).isFile();
-    // Renaming onto a symbolic link would replace the link.
-    this.#target = exists && isPlain ? realpathSync(path) : path;
-    if (isPlain) {
-      const name = `.${basename(this.#target)}.${process.pid}.partial`;
-      this.#partial = join(dirname(this.#target), name);
+  #isStarted = false;
+
+  /**
+   * Opens a file. Throws RangeError for a form that is only read, and for a bad choice of ports.
+   */
+  constructor(path: string, layout: ModelLayout, options: ResponseWriterOptions = {}) {
+    const form = options.form ?? formOf(path);
+    if (form !== 'csv' && form !== 'packed') {
+      throw new RangeError(`a response is csv or packed, not ${form}`);
     }
-    try {
-      this.#file = openSync(this.#partial ?? this.#target, 'w');
-    } catch (error) {
-      // The user knows the file by the name given, not by that of the hidden one.
-      throw Object.assign(error as Error, { path });
-    }
-    this.#put(this.#table.header());
+    const Form = form === 'csv' ? ResponseTable : PackedResponse;
+    this.#form = new Form(layout, options);
+    this.#sink = openSink(path);
   }
 
   /** Adds the rows of a block. */
-  write(block: ResponseBlock): void {
-    for (const piece of this.#table.rows(block)) this.#put(piece);
+  async write(block: ResponseBlock): Promise<void> {
+    await this.#start();
+    for (const piece of this.#form.rows(block)) {
+      const written = this.#sink.write(piece);
+      if (written !== undefined) await written;
+    }
   }
 
-  /** Completes the file and gives it its name. */
-  finish(): void {
-    this.#close();
-    if (this.#partial !== undefined) renameSync(this.#partial, this.#target);
+  /** Waits until all is written. */
+  async finish(): Promise<void> {
+    await this.#start();
+    await this.#sink.finish();
   }
 
-  /** Gives up: nothing is left of what was written. Does nothing after `finish`. */
+  /** Gives the file its name. */
+  keep(): void {
+    this.#sink.keep();
+  }
+
+  /** Gives up: nothing is left of what was written. Does nothing after `keep`. */
   discard(): void {
-    if (!this.#close()) return;
-    if (this.#partial !== undefined) rmSync(this.#partial, { force: true });
+    this.#sink.discard();
   }
 
-  #close(): boolean {
-    if (this.#file === undefined) return false;
-    closeSync(this.#file);
-    this.#file = undefined;
-    return true;
-  }
-
-  #put(piece: Uint8Array): void {
-    if (this.#file === undefined) throw new RangeError('the response is finished already');
-    for (let done = 0; done < piece.length; ) done += writeSync(this.#file, piece, done);
+  // Not before there is a row: a run that cannot start leaves a pipe empty.
+  async #start(): Promise<void> {
+    if (this.#isStarted) return;
+    this.#isStarted = true;
+    await this.#sink.write(this.#form.header());
   }
 }

@@ -1,15 +1,16 @@
 import { type ModelLayout, rowStride } from '../layout.js';
-import { blockCycles, type StimulusBlock } from '../stream.js';
+import { RowGatherer } from '../rowGatherer.js';
+import type { StimulusBlock } from '../stream.js';
+import type { TableBytes } from './bytes/inputBytes.js';
 import { columnOf, overlap, type PortColumn } from './columns.js';
 import type { CsvScanner } from './csvScanner.js';
-import { hasFields, type TableBytes, TableInput } from './tableInput.js';
+import { hasFields, TableInput } from './tableInput.js';
 import { putWords, ValueParser } from './valueParser.js';
 
 /** Name of the column that tells for how many cycles a row lasts. */
 const DURATION = '@cycles';
 
-/** Rows that last longer than this are handed out on their own, held. */
-const LONGEST_COPIED = 16;
+const ZERO = 0x30;
 
 /**
  * Reads a stimulus table (comma-separated values, RFC 4180) in constant memory.
@@ -31,12 +32,10 @@ export async function* readStimulus(
   const input = new TableInput(path, bytes);
   try {
     const rows = new StimulusRows(input.scanner, layout, await input.header());
-    do {
-      for (let block = rows.next(); block !== undefined; block = rows.next()) yield block;
-    } while (await input.more());
-    for (let block = rows.next(); block !== undefined; block = rows.next()) yield block;
-    const last = rows.rest();
-    if (last) yield last;
+    // What has come is run before more is awaited: whoever writes may wait for the response.
+    do yield* rows.all();
+    while (await input.more());
+    yield* rows.all();
   } finally {
     await input.close();
   }
@@ -50,13 +49,7 @@ class StimulusRows {
   readonly #duration: number;
   readonly #parser: ValueParser;
   readonly #unknownAt: number | undefined;
-  readonly #stride: number;
-  readonly #most: number;
-  readonly #rows: Uint32Array;
-  readonly #row: Uint32Array;
-  #count = 0;
-  /** Cycles for which the present row is still to be handed out, on its own. */
-  #held = 0;
+  readonly #gatherer: RowGatherer;
 
   constructor(scanner: CsvScanner, layout: ModelLayout, header: readonly string[]) {
     this.#scanner = scanner;
@@ -66,57 +59,46 @@ class StimulusRows {
     const widest = Math.max(0, ...this.#columns.map((column) => column.width));
     this.#parser = new ValueParser(widest, { unknown: layout.threeValued, open: false });
     this.#unknownAt = layout.threeValued ? layout.inputs.words : undefined;
-    this.#stride = rowStride(layout.inputs, layout.threeValued);
-    this.#most = blockCycles(this.#stride);
-    this.#rows = new Uint32Array(this.#most * this.#stride);
-    this.#row = new Uint32Array(this.#stride);
+    this.#gatherer = new RowGatherer(rowStride(layout.inputs, layout.threeValued));
   }
 
-  /** The next block from the records that are there; undefined where they do not fill one. */
-  next(): StimulusBlock | undefined {
-    if (this.#held > 0) return this.#holdRow();
-    while (this.#count < this.#most) {
-      if (!this.#scanner.next()) return undefined;
+  /** All the records that are there. */
+  *all(): Generator<StimulusBlock, void, undefined> {
+    while (this.#scanner.next()) {
       if (!hasFields(this.#scanner, this.#columnCount)) continue;
       this.#readRow();
-      const cycles = this.#cycles();
-      if (cycles > Math.min(LONGEST_COPIED, this.#most - this.#count)) {
-        this.#held = cycles;
-        return this.rest() ?? this.#holdRow();
-      }
-      for (let i = 0; i < cycles; i++) this.#rows.set(this.#row, this.#count++ * this.#stride);
+      if (this.#gatherer.add(this.#cycles())) yield* this.#gatherer.take();
     }
-    return this.rest();
-  }
-
-  /** What has been gathered of a block, if anything. */
-  rest(): StimulusBlock | undefined {
-    if (this.#count === 0) return undefined;
-    const cycles = this.#count;
-    this.#count = 0;
-    return { cycles, rows: this.#rows, stride: this.#stride };
-  }
-
-  #holdRow(): StimulusBlock {
-    const cycles = this.#held;
-    this.#held = 0;
-    return { cycles, rows: this.#row, stride: 0 };
+    yield* this.#gatherer.take();
   }
 
   #readRow(): void {
     const { bytes } = this.#scanner;
     const parser = this.#parser;
+    const { row } = this.#gatherer;
     for (const { field, offset, width } of this.#columns) {
       const start = this.#scanner.fieldStart(field);
       const end = this.#scanner.fieldEnd(field);
       if (start === end) continue;
+      // Most columns of wide tables are single bits, and most of their values 0 and 1.
+      if (width === 1 && end === start + 1 && (bytes[start]! & ~1) === ZERO) {
+        this.#setBit(row, offset, bytes[start]! & 1);
+        continue;
+      }
       const refusal = parser.parse(bytes, start, end, width);
       if (refusal) throw this.#error(field, refusal);
-      putWords(this.#row, 0, offset, width, parser.value);
+      putWords(row, 0, offset, width, parser.value);
       if (this.#unknownAt !== undefined) {
-        putWords(this.#row, this.#unknownAt, offset, width, parser.unknown);
+        putWords(row, this.#unknownAt, offset, width, parser.unknown);
       }
     }
+  }
+
+  #setBit(row: Uint32Array, offset: number, bit: number): void {
+    const word = offset >>> 5;
+    const mask = 1 << (offset & 31);
+    row[word] = bit === 1 ? row[word]! | mask : row[word]! & ~mask;
+    if (this.#unknownAt !== undefined) row[this.#unknownAt + word]! &= ~mask;
   }
 
   #cycles(): number {

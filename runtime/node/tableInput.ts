@@ -1,20 +1,16 @@
-import { createReadStream } from 'node:fs';
+import { inputBytes, type TableBytes } from './bytes/inputBytes.js';
 import { CsvScanner } from './csvScanner.js';
+import { shownName } from './fileForm.js';
 import { TableError } from './tableError.js';
-
-/** The bytes of a table, in pieces. A piece must not change while the next one is awaited. */
-export type TableBytes = AsyncIterable<Uint8Array> | Iterable<Uint8Array>;
-
-const PIECE = 1 << 18;
 
 /** A table being read: a scanner, and where its bytes come from. */
 export class TableInput {
   readonly scanner: CsvScanner;
   readonly #pieces: AsyncIterator<Uint8Array> | Iterator<Uint8Array>;
 
-  /** Reads the file at `path`, or `bytes` if given; `path` is then only printed. */
-  constructor(path: string, bytes: TableBytes = createReadStream(path, { highWaterMark: PIECE })) {
-    this.scanner = new CsvScanner(path);
+  /** Reads what `inputBytes` gives for `path`, or `bytes`; `path` is then only printed. */
+  constructor(path: string, bytes: TableBytes = inputBytes(path)) {
+    this.scanner = new CsvScanner(shownName(path));
     this.#pieces =
       Symbol.asyncIterator in bytes ? bytes[Symbol.asyncIterator]() : bytes[Symbol.iterator]();
   }

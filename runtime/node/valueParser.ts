@@ -1,4 +1,5 @@
-import { writeBits } from '../rowBits.js';
+import { readBits, writeBits } from '../rowBits.js';
+import type { BitRange } from '../valueText.js';
 
 // What a digit's byte stands for: 0 to 15, or one of these.
 const NO_DIGIT = 255;
@@ -69,6 +70,28 @@ export class ValueParser {
       return this.#single(digitOf[bytes[first]!]!, words);
     }
     return this.#decimal(bytes, first, last, width);
+  }
+
+  /**
+   * Whether bits of the packed row at word `at` are as the value read last: those that matter.
+   * `unknownAt` is where the row tells what is x; undefined in two-valued models.
+   */
+  matches(
+    { offset, width }: BitRange,
+    rows: Uint32Array,
+    at: number,
+    unknownAt: number | undefined,
+  ): boolean {
+    const { value, unknown, matters } = this;
+    for (let bit = 0; bit < width; bit += 32) {
+      const count = Math.min(32, width - bit);
+      const word = bit >>> 5;
+      const mask = matters[word]! & (count === 32 ? -1 : (1 << count) - 1);
+      if ((readBits(rows, at, offset + bit, count) ^ value[word]!) & mask) return false;
+      if (unknownAt === undefined) continue;
+      if ((readBits(rows, unknownAt, offset + bit, count) ^ unknown[word]!) & mask) return false;
+    }
+    return true;
   }
 
   #digits(bytes: Uint8Array, first: number, last: number, width: number, bits: 1 | 4) {

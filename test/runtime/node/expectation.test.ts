@@ -1,10 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import type { ModelLayout } from '../../../runtime/layout.js';
-import {
-  type Departure,
-  departureText,
-  ExpectationChecker,
-} from '../../../runtime/node/expectation.js';
+import { type Departure, departureText } from '../../../runtime/node/departure.js';
+import { ExpectationChecker } from '../../../runtime/node/expectation.js';
 import { ResponseTable } from '../../../runtime/node/responseTable.js';
 import { packRows } from '../../support/rows.js';
 import { bytesOf, layoutOf } from '../../support/tables.js';
@@ -92,9 +89,7 @@ describe('ExpectationChecker', () => {
         port: 'y',
         expected: '0',
         actual: '1',
-        path: 'e.csv',
-        line: 2,
-        column: 1,
+        place: 'e.csv:2:1',
       },
     ]);
   });

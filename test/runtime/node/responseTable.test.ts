@@ -93,42 +93,46 @@ describe('ResponseWriter', () => {
     rmSync(folder, { recursive: true });
   });
 
-  it('shows the file under its name only once it is finished', () => {
+  it('shows the file under its name only once it is kept', async () => {
     const path = join(folder, 'r.csv');
     const writer = new ResponseWriter(path, two);
-    writer.write(block(two, 0, ['1 0000000 0']));
+    await writer.write(block(two, 0, ['1 0000000 0']));
     expect(existsSync(path)).toBe(false);
-    writer.finish();
+    await writer.finish();
+    writer.keep();
     expect(readFileSync(path, 'utf8')).toBe('cycle,y,v,b\n0,1,0x00,0\n');
     expect(readdirSync(folder)).toEqual(['r.csv']);
   });
 
-  it('leaves an older file alone and nothing else behind when it is discarded', () => {
+  it('leaves an older file alone and nothing else behind when it is discarded', async () => {
     const path = join(folder, 'r.csv');
     writeFileSync(path, 'old');
     const writer = new ResponseWriter(path, two);
-    writer.write(block(two, 0, ['1 0000000 0']));
+    await writer.write(block(two, 0, ['1 0000000 0']));
     writer.discard();
     writer.discard();
     expect(readFileSync(path, 'utf8')).toBe('old');
     expect(readdirSync(folder)).toEqual(['r.csv']);
-    expect(() => writer.write(block(two, 1, ['1 0000000 0']))).toThrow(RangeError);
+    await expect(writer.write(block(two, 1, ['1 0000000 0']))).rejects.toThrow(RangeError);
   });
 
-  it('replaces what a symbolic link points to, not the link', () => {
+  it('replaces what a symbolic link points to, not the link', async () => {
     const path = join(folder, 'r.csv');
     const link = join(folder, 'link.csv');
     writeFileSync(path, 'old');
     symlinkSync(path, link);
-    new ResponseWriter(link, two).finish();
+    const writer = new ResponseWriter(link, two);
+    await writer.finish();
+    writer.keep();
     expect(readFileSync(path, 'utf8')).toBe('cycle,y,v,b\n');
     expect(readFileSync(link, 'utf8')).toBe('cycle,y,v,b\n');
   });
 
-  it('writes directly to what is no plain file', () => {
+  it('writes directly to what is no plain file', async () => {
     const writer = new ResponseWriter('/dev/null', two);
-    writer.write(block(two, 0, ['1 0000000 0']));
-    writer.finish();
+    await writer.write(block(two, 0, ['1 0000000 0']));
+    await writer.finish();
+    writer.keep();
     expect(existsSync('/dev/null')).toBe(true);
   });
 

@@ -1,0 +1,15 @@
+// `String.fromCharCode` takes its argument list from the stack, which is not endless.
+const CHUNK = 8192;
+
+/** Bytes as base64 (RFC 4648, section 4). */
+export function toBase64(bytes: Uint8Array): string {
+  let text = '';
+  for (let i = 0; i < bytes.length; i += CHUNK) {
+    text += String.fromCharCode(...bytes.subarray(i, i + CHUNK));
+  }
+  return btoa(text);
+}
+
+/** The bytes that base64 stands for. Throws what `atob` throws for other text. */
+export const fromBase64 = (text: string): Uint8Array<ArrayBuffer> =>
+  Uint8Array.from(atob(text), (character) => character.charCodeAt(0));

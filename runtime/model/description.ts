@@ -1,0 +1,41 @@
+import type { WasmModel } from '../wasmModel.js';
+
+/** Custom section of `model.wasm` that holds the description, as JSON. */
+export const DESCRIPTION_SECTION = 'clockstride';
+
+/** Custom section that holds a second module: it computes kept nets, and is run for that alone. */
+export const PROBES_SECTION = 'clockstride.probes';
+
+/** The form of the description; a runtime reads no other. */
+export const DESCRIPTION_FORMAT = 1;
+
+/** A net, or a vector of nets, that can be looked at by its hierarchical name. */
+export interface KeptNet {
+  readonly name: string;
+  readonly width: number;
+  /** Declared left and right index; both 0 for a scalar. */
+  readonly msb: number;
+  readonly lsb: number;
+  /**
+   * Where its bits are, least significant first: a number is the place of the first bit in the row
+   * of the probes, a list names a state element for each bit.
+   */
+  readonly from: number | readonly number[];
+}
+
+/** What travels inside `model.wasm` beside its code. */
+export interface ModelDescription {
+  readonly format: typeof DESCRIPTION_FORMAT;
+  /** Fingerprint of what was compiled: sources, top module and clocks. */
+  readonly netlist: string;
+  /** Independent sequences that run side by side. */
+  readonly lanes: 1;
+  readonly model: Omit<WasmModel, 'bytes'>;
+  /** For each state element the value that the netlist gives at power-up: `0`, `1` or `x` for none. */
+  readonly initial: string;
+  /** Cycles after which the clocks' pattern repeats. */
+  readonly patternLength: number;
+  readonly nets: readonly KeptNet[];
+  /** Of the module that computes kept nets; absent where all of them are state. */
+  readonly probes?: Omit<WasmModel, 'bytes'>;
+}

@@ -1,0 +1,30 @@
+import type { PortLayout } from '../layout.js';
+import type { KeptNet } from '../model/description.js';
+import type { Model } from '../model/model.js';
+
+/** Something with a value in each cycle: a port, a register or a kept net. */
+export interface Signal {
+  readonly name: string;
+  readonly width: number;
+  readonly kind: 'input' | 'output' | 'net';
+  /** Of ports. */
+  readonly port: PortLayout | undefined;
+}
+
+/** All that can be shown of a model, ports first. */
+export function signalsOf(model: Model): Signal[] {
+  const port =
+    (kind: 'input' | 'output') =>
+    (found: PortLayout): Signal => ({
+      name: found.name,
+      width: found.width,
+      kind,
+      port: found,
+    });
+  const net = ({ name, width }: KeptNet): Signal => ({ name, width, kind: 'net', port: undefined });
+  return [
+    ...model.inputs.map(port('input')),
+    ...model.outputs.map(port('output')),
+    ...model.nets.map(net),
+  ];
+}
