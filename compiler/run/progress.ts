@@ -1,4 +1,4 @@
-import { createLogUpdate } from 'log-update';
+import type { createLogUpdate } from 'log-update';
 import { count, rateText } from './runSummary.js';
 
 /** A run that takes no longer shows no progress. */
@@ -8,31 +8,49 @@ const INTERVAL_MS = 200;
 /** Shows on a terminal how far a run is: cycles, rate, time left. Elsewhere it shows nothing. */
 export class Progress {
   readonly #started = performance.now();
-  readonly #show: ReturnType<typeof createLogUpdate> | undefined;
+  readonly #stream: NodeJS.WriteStream | undefined;
+  #show: Promise<ReturnType<typeof createLogUpdate>> | undefined;
   readonly #total: number | undefined;
+  readonly #before: number;
   #next = this.#started + QUIET_MS;
 
-  /** `total` is the number of cycles wanted, where that is known. */
-  constructor(total: number | undefined, stream: NodeJS.WriteStream = process.stderr) {
-    this.#total = total;
-    if (stream.isTTY) this.#show = createLogUpdate(stream);
+  /**
+   * `total` is the number of cycles wanted, where that is known; `before` were done already when it
+   * started.
+   */
+  constructor(total: number | undefined, before = 0, stream: NodeJS.WriteStream = process.stderr) {
+    // As good as none: what ends the run is not known.
+    this.#total = total === Number.MAX_SAFE_INTEGER ? undefined : total;
+    this.#before = before;
+    this.#stream = stream.isTTY ? stream : undefined;
   }
 
   /** Call it often: it shows something a few times a second. */
   update(cycles: number): void {
-    if (this.#show === undefined) return;
+    if (this.#stream === undefined) return;
     const now = performance.now();
     if (now < this.#next) return;
     this.#next = now + INTERVAL_MS;
-    const perSecond = (cycles * 1000) / (now - this.#started);
-    this.#show(progressText(cycles, this.#total, perSecond));
+    const perSecond = ((cycles - this.#before) * 1000) / (now - this.#started);
+    // Loaded for runs that take long: it would make all the others start later.
+    this.#show ??= line(this.#stream);
+    const text = progressText(cycles, this.#total, perSecond);
+    this.#show.then((show) => show(text));
   }
 
   /** Takes the line away. */
   clear(): void {
-    this.#show?.clear();
-    this.#show?.done();
+    this.#show?.then((show) => {
+      show.clear();
+      show.done();
+    });
+    this.#show = undefined;
   }
+}
+
+async function line(stream: NodeJS.WriteStream) {
+  const { createLogUpdate } = await import('log-update');
+  return createLogUpdate(stream);
 }
 
 /** One line: `12,000,000 of 50,000,000 cycles, 24 %, 8.10 million cycles/s, 5 s left`. */

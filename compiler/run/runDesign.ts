@@ -1,16 +1,21 @@
 import { setImmediate } from 'node:timers/promises';
 import type { Engine } from '../../runtime/engine.js';
-import { ResponseWriter } from '../../runtime/node/index.js';
-import { Signature } from '../../runtime/signature.js';
-import { type ResponseBlock, runBlocks, type StimulusBlock } from '../../runtime/stream.js';
+import { runBlocks, type StimulusBlock } from '../../runtime/stream.js';
+import { StartingEngine } from '../background/startingEngine.js';
+import type { ModelCache } from '../cache/modelCache.js';
 import { type PowerUp, powerUpState } from '../circuit/powerUp.js';
+import { powerUpMemories } from '../circuit/powerUpMemory.js';
 import type { Design } from '../compile.js';
 import type { Emitter } from '../emit/emitter.js';
-import { createEngine, type EngineName } from '../engines.js';
-import { BusWatch } from './busWatch.js';
-import { Departures } from './departures.js';
+import type { EngineName } from '../engines.js';
+import { watchBuses } from './outlets/busWatch.js';
+import type { OutletPlan } from './outlets/outlet.js';
+import { Outlets } from './outlets/outlets.js';
 import { Progress } from './progress.js';
+import { runEngine } from './runEngine.js';
+import type { RunRecorder, RunStart } from './runRecorder.js';
 import { INTERRUPTED, type RunSummary } from './runSummary.js';
+import { WatchedNets } from './watchedNets.js';
 
 /** How long a run may keep events waiting. */
 const PAUSE_MS = 50;
@@ -24,151 +29,116 @@ export interface RunRequest {
   readonly powerUp: PowerUp;
   /** Of random power-up. */
   readonly seed: number | bigint;
-  /** Files for the response and of the expectation. */
-  readonly response?: string;
-  readonly expect?: string;
-  /** Goes on after a departure. */
-  readonly all?: boolean;
-  readonly signature?: boolean;
+  /** Where the response goes, those that judge it first; nowhere unless given. */
+  readonly outlets?: readonly OutletPlan[];
   /** Notes for the summary. */
   readonly notes?: readonly string[];
   /** Aborted by Ctrl-C: the run ends after the block at hand. */
   readonly interrupt?: AbortSignal;
+  /** Goes on from there; the stimulus is what is left of it. From power-up unless given. */
+  readonly from?: RunStart;
+  /** Keeps moments to go on from. */
+  readonly recorder?: RunRecorder;
   /** Called when the first cycles are done, so that the tables can be read at least there. */
   readonly onStart?: () => void;
-  /** Told each departure as it is found. */
-  readonly onDeparture?: (text: string) => void;
   /** An emitter that has been started before, to be ready. */
   readonly emitter?: Emitter;
+  /** Models of the design's circuit that were compiled before. */
+  readonly models?: ModelCache;
 }
 
 /**
- * Runs a design over a stimulus in constant memory: writes the response, compares it with an
- * expectation, signs it.
+ * Runs a design over a stimulus in constant memory, and hands the response to outlets.
  *
- * The response file appears when the run is over, up to the last cycle run. It does not appear
- * where the run throws: `TableError` for a bad table, `RunFault` for a cycle without result.
+ * Files appear when the run is over, up to the last cycle that counts. They do not appear where the
+ * run throws: `TableError` for a bad table, `RunFault` for a cycle without result.
  */
 export async function runDesign(design: Design, request: RunRequest): Promise<RunSummary> {
-  const { layout, circuit } = design;
-  const watch = BusWatch.of(design);
-  const engine = await createEngine(watch?.design ?? design, request.engine, request.emitter);
-  engine.reset(powerUpState(circuit, request.powerUp, request.seed));
-  const outlets = await Outlets.open(design, request);
-  const progress = new Progress(request.cycles);
-  const started = performance.now();
-  let nextPause = started + PAUSE_MS;
+  const plans = [...(request.outlets ?? []), ...watchBuses(design)];
+  const nets = new WatchedNets(
+    design,
+    plans.map(({ watch }) => watch),
+  );
+  const start = powerUpState(design.circuit, request.powerUp, request.seed);
+  const marks = plans.some((plan) => plan.marks === true);
+  const engine = await runEngine(nets.design, { ...request, marks, start });
+  if (request.from === undefined) {
+    engine.reset(start);
+    powerUpMemories(engine, design.circuit, request.powerUp, request.seed);
+  } else engine.restore(request.from.point);
+  const outlets = await Outlets.open(plans, design, engine, nets, request.from);
+  const progress = new Progress(request.cycles, request.from?.cycle);
+  const moment = (): RunStart => ({
+    cycle: outlets.cycles,
+    point: { ...engine.save(), position: outlets.cycles % design.schedule.pattern.length },
+    outlets: outlets.save(),
+  });
   try {
-    for await (const block of runBlocks(engine, request.stimulus, {
-      ...(request.cycles !== undefined && { cycles: request.cycles }),
-      response: outlets.areWanted || watch !== undefined,
-    })) {
-      const taken = await outlets.take(watch?.ownPart(block) ?? block);
-      watch?.look(block, taken);
-      if (block.firstCycle === 0) request.onStart?.();
-      progress.update(outlets.cycles);
-      // Without a pause no event is handled, and an interrupt is one.
-      if (performance.now() > nextPause) {
-        await setImmediate();
-        nextPause = performance.now() + PAUSE_MS;
-      }
-      if (outlets.isEnough || request.interrupt?.aborted) break;
-    }
+    await request.recorder?.begin(moment);
+    const started = performance.now();
+    await runInto(outlets, engine, request, progress, moment);
     progress.clear();
     const seconds = (performance.now() - started) / 1000;
-    await outlets.finish();
-    const summary = summaryOf(request, outlets, seconds, layout.threeValued ? engine : undefined);
-    return { ...summary, ...(watch && { buses: watch.events() }) };
+    const { cycles } = outlets;
+    const stopped = outlets.stopped ?? interruption(request, cycles);
+    // The engine of a run that an outlet has ended may have gone further.
+    const last = request.recorder && outlets.stopped === undefined ? moment() : undefined;
+    const { notes, ...findings } = await outlets.finish({ cycles, stopped, engine });
+    const done = cycles - (request.from?.cycle ?? 0);
+    const summary = {
+      cycles,
+      seconds,
+      cyclesPerSecond: done / Math.max(seconds, 1e-9),
+      engine: request.engine,
+      powerUp: request.powerUp,
+      ...findings,
+      ...(stopped && { stopped }),
+      ...(design.layout.threeValued && { unknownRegisters: unknownNames(engine) }),
+      notes: [...(request.notes ?? []), ...notes],
+    };
+    const more = await request.recorder?.end(summary, last);
+    return more === undefined ? summary : { ...summary, notes: [...summary.notes, ...more] };
   } finally {
     progress.clear();
     outlets.discard();
   }
 }
 
-function summaryOf(
-  request: RunRequest,
+async function runInto(
   outlets: Outlets,
-  seconds: number,
-  threeValued: Engine | undefined,
-): RunSummary {
-  const { cycles, signature, departures } = outlets;
-  const isInterrupted = request.interrupt?.aborted && cycles !== request.cycles;
-  const isDeparted = outlets.isEnough && departures?.first !== undefined;
-  const reason = isInterrupted ? INTERRUPTED : isDeparted ? 'departs from the expectation' : '';
-  return {
-    cycles,
-    seconds,
-    cyclesPerSecond: cycles / Math.max(seconds, 1e-9),
-    engine: request.engine,
-    powerUp: request.powerUp,
-    ...(signature && { signature: signature.digits() }),
-    ...(departures?.first && { mismatch: departures.first }),
-    ...(request.all && departures && { mismatches: departures.count }),
-    ...(reason !== '' && { stopped: { cycle: isDeparted ? cycles - 1 : cycles, reason } }),
-    ...(threeValued && { unknownRegisters: unknownNames(threeValued) }),
-    notes: [...(request.notes ?? []), ...outlets.notes],
-  };
+  engine: Engine,
+  request: RunRequest,
+  progress: Progress,
+  moment: () => RunStart,
+): Promise<void> {
+  const from = request.from && { cycle: request.from.cycle, before: request.from.point.before };
+  let nextPause = performance.now() + PAUSE_MS;
+  for await (const block of runBlocks(engine, request.stimulus, {
+    ...(request.cycles !== undefined && { cycles: request.cycles }),
+    response: outlets.wantResponse,
+    ...(engine instanceof StartingEngine && { pieceCycles: () => engine.pieceCycles }),
+    ...(from && { from }),
+  })) {
+    await outlets.take(block);
+    if (block.firstCycle === (from?.cycle ?? 0)) request.onStart?.();
+    progress.update(outlets.cycles);
+    // Without a pause no event is handled, and an interrupt is one.
+    if (performance.now() > nextPause) {
+      await setImmediate();
+      nextPause = performance.now() + PAUSE_MS;
+    }
+    if (outlets.stopped || outlets.areSatisfied || request.interrupt?.aborted) return;
+    const recorded = request.recorder?.after(moment);
+    if (recorded instanceof Promise) await recorded;
+  }
+}
+
+function interruption({ interrupt, cycles: wanted }: RunRequest, cycles: number) {
+  if (!interrupt?.aborted || cycles === wanted) return undefined;
+  return { cycle: cycles, reason: INTERRUPTED };
 }
 
 function unknownNames(engine: Engine): string[] {
   const state = engine.state();
   return engine.layout.stateNames.filter((_, element) => state[element] === 2);
-}
-
-/** Where the response goes. */
-class Outlets {
-  cycles = 0;
-  isEnough = false;
-  readonly notes: string[] = [];
-  readonly signature: Signature | undefined;
-  readonly departures: Departures | undefined;
-  readonly #writer: ResponseWriter | undefined;
-
-  private constructor(
-    writer: ResponseWriter | undefined,
-    departures: Departures | undefined,
-    signature: Signature | undefined,
-  ) {
-    this.#writer = writer;
-    this.departures = departures;
-    this.signature = signature;
-  }
-
-  static async open({ layout }: Design, request: RunRequest): Promise<Outlets> {
-    const departures =
-      request.expect === undefined
-        ? undefined
-        : await Departures.open(request.expect, layout, request);
-    const writer =
-      request.response === undefined ? undefined : new ResponseWriter(request.response, layout);
-    return new Outlets(writer, departures, request.signature ? new Signature(layout) : undefined);
-  }
-
-  get areWanted(): boolean {
-    return (this.#writer ?? this.departures ?? this.signature) !== undefined;
-  }
-
-  /** Takes a block; returns how many of its cycles count. */
-  async take(block: ResponseBlock): Promise<number> {
-    const last = await this.departures?.check(block);
-    if (last !== undefined) this.isEnough = true;
-    // What follows the departure was run, but was not asked for.
-    const cycles = last === undefined ? block.cycles : last - block.firstCycle + 1;
-    this.signature?.add(block.rows, cycles);
-    this.#writer?.write({ ...block, cycles });
-    this.cycles = block.firstCycle + cycles;
-    return cycles;
-  }
-
-  async finish(): Promise<void> {
-    const unreached = await this.departures?.finish();
-    if (unreached !== undefined && !this.isEnough) {
-      this.notes.push(`the expectation goes on at cycle ${unreached}, which was not run`);
-    }
-    this.#writer?.finish();
-  }
-
-  discard(): void {
-    this.#writer?.discard();
-  }
 }

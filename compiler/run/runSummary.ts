@@ -1,7 +1,7 @@
 import type { Departure } from '../../runtime/node/index.js';
 import type { PowerUp } from '../circuit/powerUp.js';
 import type { EngineName } from '../engines.js';
-import { type BusEvent, busEventText } from './busWatch.js';
+import { type BusEvent, busEventText } from './outlets/busEvent.js';
 
 /** What a run came to; printed as it stands by `run --json`. */
 export interface RunSummary {
@@ -12,12 +12,16 @@ export interface RunSummary {
   readonly powerUp: PowerUp;
   /** CRC-64 of the response, sixteen hexadecimal digits, where asked for. */
   readonly signature?: string;
+  /** What the signature should have been, where that was said. */
+  readonly expectedSignature?: string;
   /** The first departure from the expectation. */
   readonly mismatch?: Mismatch;
   /** How many departures there were, where all were asked for. */
   readonly mismatches?: number;
   /** Set where the run ended before its last cycle. */
   readonly stopped?: { readonly cycle: number; readonly reason: string };
+  /** How the states come again, where that was looked for and found. */
+  readonly repetition?: { readonly leadIn: number; readonly period: number };
   /** State elements that are x at the end of a three-valued run. */
   readonly unknownRegisters?: readonly string[];
   /** Buses that were in conflict or floated, where the circuit has buses. */
@@ -33,14 +37,23 @@ const SHOWN = 20;
 /** Why a run stopped that the user has stopped. */
 export const INTERRUPTED = 'interrupted';
 
-/** A summary as lines of text. `expectation` names the table the run was compared with. */
+/** What the command ends with: 1 where a run departs from what is expected or was interrupted. */
+export const exitStatus = (summary: RunSummary): 0 | 1 =>
+  summary.mismatch !== undefined ||
+  summary.stopped?.reason === INTERRUPTED ||
+  summary.signature !== (summary.expectedSignature ?? summary.signature)
+    ? 1
+    : 0;
+
+/** A summary as lines of text. `expectation` names what the run was compared with. */
 export function summaryText(summary: RunSummary, expectation: string | undefined): string {
   const { cycles, seconds, cyclesPerSecond, engine, powerUp } = summary;
   const lines = [
     `${count(cycles)} cycles in ${seconds.toFixed(2)} s, ${rateText(cyclesPerSecond)}` +
       ` (engine ${engine}, power-up ${powerUp})`,
   ];
-  if (summary.signature !== undefined) lines.push(`signature ${summary.signature}`);
+  lines.push(...signatureLines(summary));
+  if (summary.repetition !== undefined) lines.push(repetitionText(summary.repetition));
   if (summary.unknownRegisters !== undefined) lines.push(unknownText(summary.unknownRegisters));
   lines.push(...busLines(summary.buses ?? []));
   for (const note of summary.notes) lines.push(`note: ${note}`);
@@ -49,6 +62,18 @@ export function summaryText(summary: RunSummary, expectation: string | undefined
   }
   if (expectation !== undefined) lines.push(verdict(summary, expectation));
   return lines.join('\n');
+}
+
+function signatureLines({ signature, expectedSignature }: RunSummary): string[] {
+  if (signature === undefined) return [];
+  if (expectedSignature === undefined) return [`signature ${signature}`];
+  if (signature === expectedSignature) return [`signature ${signature}, as expected`];
+  return [`signature ${signature}, expected ${expectedSignature}`];
+}
+
+function repetitionText({ leadIn, period }: NonNullable<RunSummary['repetition']>): string {
+  if (period === 1) return `the state stands still from cycle ${count(leadIn)} on`;
+  return `states repeat every ${count(period)} cycles, from cycle ${count(leadIn)} on`;
 }
 
 function busLines(buses: readonly BusEvent[]): string[] {

@@ -4,7 +4,8 @@ import { Diagnostics } from '../../compiler/diagnostics/diagnostics.js';
 import { Source } from '../../compiler/diagnostics/source.js';
 import { type EngineName, engineNames } from '../../compiler/engines.js';
 import { readNetlist } from '../../compiler/read/readNetlist.js';
-import { busEventText } from '../../compiler/run/busWatch.js';
+import { busEventText } from '../../compiler/run/outlets/busEvent.js';
+import { signResponse } from '../../compiler/run/outlets/signResponse.js';
 import { runDesign } from '../../compiler/run/runDesign.js';
 import { layRow } from '../../runtime/layout.js';
 import { readStimulus } from '../../runtime/node/index.js';
@@ -33,7 +34,7 @@ const run = (engine: EngineName, threeValued: boolean) => {
     engine,
     powerUp: threeValued ? 'unknown' : 'zero',
     seed: 0,
-    signature: true,
+    outlets: [signResponse()],
   });
 };
 
