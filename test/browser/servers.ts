@@ -34,7 +34,7 @@ export async function servePage(): Promise<Loopback> {
       response.setHeader('Content-Type', 'text/html').end(html);
       return;
     }
-    const [, name = '', file = ''] = /^\/(\w+)\/(\w+\.m?js)$/.exec(url) ?? [];
+    const [, name = '', file = ''] = /^\/(\w+)\/((?:\w+\/)*\w+\.m?js)$/.exec(url) ?? [];
     const folder = folders.get(name);
     const text = folder && (await readFile(join(folder, file)).catch(() => undefined));
     if (text) response.setHeader('Content-Type', 'text/javascript').end(text);
@@ -60,7 +60,8 @@ export async function fence(): Promise<Loopback> {
   return started(server, requests);
 }
 
-async function started(server: Server, requests: readonly string[]): Promise<Loopback> {
+/** Starts a server on the loopback interface. */
+export async function started(server: Server, requests: readonly string[]): Promise<Loopback> {
   await new Promise<void>((resolve, reject) => {
     server.once('error', reject).listen(0, '127.0.0.1', resolve);
   });

@@ -1,0 +1,124 @@
+import { execFile } from 'node:child_process';
+import { mkdirSync, symlinkSync, writeFileSync } from 'node:fs';
+import { join } from 'node:path';
+import { fileURLToPath } from 'node:url';
+import { promisify } from 'node:util';
+import { beforeAll, describe, expect, it } from 'vitest';
+import { designOf } from '../../compiler/compile.js';
+import { Source } from '../../compiler/diagnostics/source.js';
+import { designFrom } from '../support/ownCircuits.js';
+import { packageFolder, packInto } from '../support/packages.js';
+
+const netlist = `module mix(input clk, input go, input [7:0] few, input [63:0] \\wide+1 ,
+    output bit, output [31:0] word, output [127:0] block);
+  reg [63:0] held;
+  always @(posedge clk) if (go) held <= \\wide+1 ;
+  assign bit = held[0], word = held[31:0], block = {held, 56'd0, few};
+endmodule`;
+
+// Each line below a marker is wrong, and the compiler must say so.
+const twoValued = `
+import { load, loadInWorker, compile, RunFault, type SavedState } from 'PACKAGE';
+
+const model = await load(await compile(), { powerUp: 'random', seed: 3n, verify: true });
+const word: number = model.write({ go: 1, few: 3, 'wide+1': 5n }).step().read('word');
+const block: bigint = model.read().block;
+const held: bigint = model.peek('held');
+const again: number = model.peek('few');
+const saved: SavedState = model.save();
+model.restore(saved).restore(JSON.stringify(saved)).reset();
+const { response } = model.run({ cycles: 2, stimulus: { few: new Uint8Array(2) }, response: ['word', 'bit'] });
+const column: Uint32Array = response.word;
+const { met, cycles } = model.runUntil({ word: 3 }, 10);
+model.runUntil((m) => m.read('bit') === 1 && m.cycle > 4, 10);
+const end: () => void = model.subscribe((changes, cycle) => void [changes.block, cycle], ['block']);
+const worker = await loadInWorker();
+const far: number = await worker.read('word');
+await worker.run({ cycles: 9 }, { onProgress: (done) => void done, signal: AbortSignal.timeout(5) });
+const clock: 'clk' = model.clocks[0]!;
+const failed = (error: unknown) => error instanceof RunFault && error.completed === word;
+if (failed(1)) end();
+export const all = [block, held, again, column, met, cycles, far, clock];
+
+// @ts-expect-error
+model.write({ gone: 1 });
+// @ts-expect-error
+model.write({ few: 1n });
+// @ts-expect-error
+model.write({ 'wide+1': 1 });
+// @ts-expect-error
+model.write({ clk: 1 });
+// @ts-expect-error
+model.write({ go: 'x' });
+// @ts-expect-error
+model.read('words');
+// @ts-expect-error
+export const narrow: number = model.read('block');
+// @ts-expect-error
+model.peek('hold');
+// @ts-expect-error
+response.block;
+// @ts-expect-error
+model.run({ cycles: 1, unknown: {} });
+// @ts-expect-error
+model.runUntil({ word: 3 });
+// @ts-expect-error
+await worker.runUntil(() => true, 3);
+// @ts-expect-error
+export const early: number = worker.read('word');
+// @ts-expect-error
+await load(undefined, { powerUp: 'unknown' });
+`;
+
+const threeValued = `
+import { load } from 'PACKAGE';
+
+const model = await load(undefined, { powerUp: 'unknown' });
+model.write({ go: 'x', few: '0b0000000x', 'wide+1': 3n });
+const bit: number | 'x' = model.read('bit');
+const word = model.read('word');
+export const known: number = typeof word === 'string' ? 0 : word;
+const { unknown } = model.run({ cycles: 1, unknown: { go: Uint8Array.of(1) } });
+export const all = [bit, unknown.word[0]];
+
+// @ts-expect-error
+export const sure: number = word;
+// @ts-expect-error
+model.write({ few: 'x' });
+// @ts-expect-error
+model.write({ go: 'z' });
+`;
+
+const root = packageFolder();
+const tsc = fileURLToPath(new URL('../../node_modules/typescript/bin/tsc', import.meta.url));
+
+beforeAll(async () => {
+  const { circuit } = designFrom(new Source('mix.v', netlist));
+  const npmName = (name: string) => ({ npmName: { name, version: '1.0.0' } });
+  await packInto(join(root, 'mix'), designOf(circuit), npmName('mix'));
+  await packInto(join(root, 'mix3'), designOf(circuit, { threeValued: true }), npmName('mix3'));
+  mkdirSync(join(root, 'node_modules'));
+  for (const name of ['mix', 'mix3']) {
+    symlinkSync(join(root, name), join(root, 'node_modules', name));
+    const text = name === 'mix' ? twoValued : threeValued;
+    writeFileSync(join(root, `${name}ByFile.mts`), text.replace('PACKAGE', `./${name}/model.mjs`));
+    writeFileSync(join(root, `${name}ByName.mts`), text.replace('PACKAGE', name));
+  }
+});
+
+describe('the types of a package', () => {
+  it.each([
+    ['nodenext', 'nodenext'],
+    ['esnext', 'bundler'],
+  ])(
+    'take what is right and refuse what is wrong, in modules of %s',
+    async (module, resolution) => {
+      const files = ['mix', 'mix3'].flatMap((n) => [`${n}ByFile.mts`, `${n}ByName.mts`]);
+      const options = ['--strict', '--noEmit', '--target', 'es2022', '--lib', 'es2022,dom'];
+      const kind = ['--module', module, '--moduleResolution', resolution, '--types', ''];
+      const args = [tsc, ...options, ...kind, '--exactOptionalPropertyTypes', ...files];
+      const run = promisify(execFile)(process.execPath, args, { cwd: root });
+      await expect(run.catch(({ stdout }) => ({ stdout }))).resolves.toMatchObject({ stdout: '' });
+    },
+  );
+});
