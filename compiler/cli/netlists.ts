@@ -1,11 +1,13 @@
-import { readFileSync } from 'node:fs';
-import { readFile } from 'node:fs/promises';
+import { readFileSync, statSync } from 'node:fs';
+import { readFile, stat } from 'node:fs/promises';
 import { type Command, InvalidArgumentError } from 'commander';
+import type { NetlistCache } from '../cache/netlistCache.js';
 import type { Circuit } from '../circuit/circuit.js';
 import { type Diagnostic, Diagnostics, InputError } from '../diagnostics/diagnostics.js';
 import { Source } from '../diagnostics/source.js';
 import { readNetlist } from '../read/readNetlist.js';
 import { includeReader } from '../read/verilog/includes.js';
+import { countArgument } from './numbers.js';
 
 /** The options that every verb which reads netlists has. */
 export interface NetlistOptions {
@@ -14,6 +16,8 @@ export interface NetlistOptions {
   readonly include?: readonly string[];
   readonly replace?: ReadonlyMap<string, string>;
   readonly blackBox?: readonly string[];
+  /** See `NetlistReadOptions`. */
+  readonly memoriesFrom?: number;
 }
 
 /** Adds the netlist arguments and the options common to the verbs that read them. */
@@ -33,19 +37,45 @@ export function addNetlistOptions(command: Command): Command {
       'leave out what is inside module NAME: its outputs become inputs, its inputs outputs\n' +
         '(repeatable)',
       addToList,
+    )
+    .option(
+      '--memories-from <bits>',
+      'hold Verilog arrays of at least so many bits as memories, and smaller ones as registers\n' +
+        '(default: 257)',
+      countArgument,
     );
 }
 
-/** A circuit as read, and the warnings and notes that came with it. */
+/** A file that was read. */
+export interface ReadFile {
+  readonly path: string;
+  readonly bytes: Uint8Array;
+}
+
+/** A circuit as read, the warnings and notes that came with it, and the files that it is made of. */
 export interface LoadedCircuit {
   readonly circuit: Circuit;
   readonly found: readonly Diagnostic[];
+  readonly files: readonly ReadFile[];
+  /** What a cache tells the circuit by, if there is one. */
+  readonly id?: string;
 }
 
-/** Reads netlist files into one circuit. Throws `InputError` with all problems found. */
+/** How a circuit is found that has been read before. */
+export interface LoadOptions {
+  readonly cache?: NetlistCache | undefined;
+  /** Called where it has to be read. */
+  readonly onReading?: () => void;
+}
+
+/**
+ * Reads netlist files into one circuit, or finds it in a cache. Throws `InputError` with all problems
+ * found.
+ */
 export async function loadCircuit(
   files: readonly string[],
   options: NetlistOptions,
+  { cache, onReading }: LoadOptions = {},
 ): Promise<LoadedCircuit> {
   const diagnostics = new Diagnostics();
   const sources = await Promise.all(files.map((file) => readSource(file, diagnostics)));
@@ -55,24 +85,51 @@ export async function loadCircuit(
     if (source !== undefined) replacements.set(name, source);
   }
   diagnostics.throwIfErrors();
+  const named: ReadFile[] = sources.filter((source) => source !== undefined);
+  named.push(...replacements.values());
+  const told = {
+    ...(options.top !== undefined && { top: options.top }),
+    ...(options.define !== undefined && { defines: options.define }),
+    ...(options.blackBox !== undefined && { blackBoxes: options.blackBox }),
+    ...(options.memoriesFrom !== undefined && { memoriesFrom: options.memoriesFrom }),
+  };
+  const { include = [], replace } = options;
+  const request = { named, options: { ...told, include, replace } };
+  const known = cache?.find(request, bytesIfAny);
+  if (known !== undefined) return { ...known, files: [...named, ...known.included] };
+  onReading?.();
+  const looked: LookedUp[] = [];
+  const bytesOf = (path: string): Uint8Array | undefined => {
+    const bytes = bytesIfAny(path);
+    looked.push({ path, bytes });
+    return bytes;
+  };
   const circuit = readNetlist(
     sources.filter((source) => source !== undefined),
-    {
-      ...(options.top !== undefined && { top: options.top }),
-      ...(options.define !== undefined && { defines: options.define }),
-      ...(options.blackBox !== undefined && { blackBoxes: options.blackBox }),
-      replacements,
-      readInclude: includeReader(options.include ?? [], bytesOf),
-    },
+    { ...told, replacements, readInclude: includeReader(include, bytesOf) },
     diagnostics,
   );
   diagnostics.throwIfErrors();
   if (circuit === undefined) throw new InputError(diagnostics.list);
-  return { circuit, found: diagnostics.list };
+  const found = diagnostics.list;
+  const read = [...named, ...looked.filter((file): file is ReadFile => file.bytes !== undefined)];
+  const id = cache?.keep(request, looked, { circuit, found });
+  return { circuit, found, files: read, ...(id !== undefined && { id }) };
+}
+
+/** A file that was looked for. */
+interface LookedUp {
+  readonly path: string;
+  readonly bytes: Uint8Array | undefined;
 }
 
 async function readSource(path: string, diagnostics: Diagnostics): Promise<Source | undefined> {
   try {
+    // A device such as /dev/zero may have no end.
+    if ((await stat(path)).isCharacterDevice()) {
+      diagnostics.add('file-unreadable', `${path} cannot be read: it is a device, not a file`);
+      return undefined;
+    }
     return new Source(path, await readFile(path));
   } catch (error) {
     diagnostics.add('file-unreadable', `${path} cannot be read: ${reason(error)}`);
@@ -82,9 +139,9 @@ async function readSource(path: string, diagnostics: Diagnostics): Promise<Sourc
 
 // Undefined where there is no such file: the next folder may have it, and the reader reports it
 // if none has.
-function bytesOf(path: string): Uint8Array | undefined {
+function bytesIfAny(path: string): Uint8Array | undefined {
   try {
-    return readFileSync(path);
+    return statSync(path).isFile() ? readFileSync(path) : undefined;
   } catch {
     return undefined;
   }

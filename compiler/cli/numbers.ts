@@ -14,3 +14,10 @@ export function seedArgument(text: string): bigint {
   if (!/^(\d+|0x[0-9a-f]+)$/i.test(text)) throw new InvalidArgumentError('Give a whole number.');
   return BigInt(text);
 }
+
+/** Reads a whole number from 1 on. */
+export function positiveArgument(text: string): number {
+  const value = countArgument(text);
+  if (value === 0) throw new InvalidArgumentError('Give a whole number from 1 on.');
+  return value;
+}

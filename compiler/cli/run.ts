@@ -1,46 +1,86 @@
 import { Command, Option } from 'commander';
-import { readStimulus } from '../../runtime/node/index.js';
-import { heldStimulus, randomStimulus, type StimulusBlock } from '../../runtime/stream.js';
+import { RunFault } from '../../runtime/engine.js';
+import { STANDARD } from '../../runtime/node/index.js';
+import { isBackground, openCompiler } from '../background/compileThread.js';
+import { ModelCache } from '../cache/modelCache.js';
 import { type PowerUp, powerUpModes } from '../circuit/powerUp.js';
 import { startingRegisters } from '../circuit/startingRegisters.js';
 import type { Design } from '../compile.js';
-import { startEmitter } from '../emit/emitter.js';
 import { type EngineName, engineNames } from '../engines.js';
+import { CannotGoOn } from '../run/outlets/outlets.js';
 import { runDesign } from '../run/runDesign.js';
-import { summaryText } from '../run/runSummary.js';
+import { exitStatus, summaryText } from '../run/runSummary.js';
+import { addCacheOption, type CacheOptions, userCache } from './cacheOption.js';
 import { addClockOption, type ClockOptions, timedDesign } from './clockOption.js';
-import { addNetlistOptions, loadCircuit, type NetlistOptions } from './netlists.js';
-import { countArgument, seedArgument } from './numbers.js';
+import { addNetlistOptions, loadCircuit, type NetlistOptions, type ReadFile } from './netlists.js';
+import { seedArgument } from './numbers.js';
 import { printDiagnostics } from './printDiagnostics.js';
+import {
+  addExpectationOptions,
+  type ExpectationOptions,
+  expectationName,
+  expectationOutlets,
+} from './run/expectationOptions.js';
+import { addPeriodOptions, courseOf, type PeriodOptions } from './run/periodOptions.js';
+import {
+  addRecordOptions,
+  type RecordOptions,
+  type RecordSession,
+  startRecord,
+} from './run/recordOptions.js';
+import {
+  addResponseOptions,
+  type ResponseOptions,
+  responseOutlets,
+} from './run/responseOptions.js';
+import { addStimulusOptions, type StimulusOptions } from './run/stimulusOptions.js';
+import {
+  addWaveOptions,
+  addWindowOptions,
+  type WaveOptions,
+  waveOutlets,
+} from './run/waveOptions.js';
 import { UsageError } from './usageError.js';
 
-interface RunOptions extends NetlistOptions, ClockOptions {
-  readonly stimulus?: string;
-  readonly random?: bigint;
-  readonly cycles?: number;
-  readonly response?: string;
-  readonly expect?: string;
-  readonly all?: true;
-  readonly signature?: true;
+/*
+ * Options come in groups, one file each in `run/`, that add them to the command and turn them into
+ * a stimulus or into outlets; see `compiler/run/outlets/outlet.ts`. A new group is named once in
+ * `RunOptions`, once in `runCommand`, and its outlets once in `run`, those that judge before those
+ * that write.
+ */
+
+/** What the command line of a run says. */
+export interface RunOptions
+  extends NetlistOptions,
+    ClockOptions,
+    CacheOptions,
+    StimulusOptions,
+    PeriodOptions,
+    WaveOptions,
+    RecordOptions,
+    ResponseOptions,
+    ExpectationOptions {
   readonly powerUp?: PowerUp;
   readonly seed: bigint;
   readonly engine: EngineName;
   readonly json?: true;
 }
 
-/** The verb `run`: runs cycles of a netlist. */
-export function runCommand(): Command {
-  return addClockOption(addNetlistOptions(new Command('run')))
-    .description('Runs cycles of a netlist and writes, compares or signs the response.')
-    .addOption(
-      new Option('--stimulus <file>', 'input values, a CSV row a cycle').conflicts('random'),
-    )
-    .option('--random <seed>', 'fresh random bits for all inputs in every cycle', seedArgument)
-    .option('--cycles <n>', 'how long; as long as the stimulus unless given', countArgument)
-    .option('--response <file>', 'write the outputs of every cycle as CSV')
-    .option('--expect <file>', 'compare the outputs with this CSV; end at the first departure')
-    .option('--all', 'with --expect: go on and list all departures')
-    .option('--signature', 'print the CRC-64 of the response')
+/** The verb `run`: runs cycles of a netlist. `action` is given what the command line says. */
+export function runCommand(
+  action: (files: string[], options: RunOptions) => Promise<void> = run,
+): Command {
+  const command = addClockOption(addNetlistOptions(new Command('run'))).description(
+    'Runs cycles of a netlist and writes, compares or signs the response.',
+  );
+  addStimulusOptions(command);
+  addPeriodOptions(command);
+  addResponseOptions(command);
+  addExpectationOptions(command);
+  addWindowOptions(addWaveOptions(command), false);
+  addRecordOptions(command);
+  addCacheOption(command);
+  return command
     .addOption(
       new Option(
         '--power-up <how>',
@@ -55,33 +95,75 @@ export function runCommand(): Command {
     .addOption(new Option('--engine <name>', 'what runs it').choices(engineNames).default('wasm'))
     .option('--json', 'print the summary as JSON')
     .addHelpText('after', HELP)
-    .action(run);
+    .action((files: string[], options: RunOptions) => action(files, options));
 }
 
 const HELP = `
 A stimulus table names input ports in its header; an empty field holds the value
 before, a column @cycles tells how long a row lasts. The clock ticks by itself and has
-no column. An expectation table has any of the columns of a response.
+no column. An expectation table has any of the columns of a response. Other forms, with
+examples of modules, are in the README under Streams.
 
 Exit status: 0 done and as expected, 1 done and a departure found or interrupted,
 2 an input or the request is wrong, or a cycle has no result.
 
-Example:
-  clockstride run lock.v --stimulus boats.csv --cycles 2000000 --expect lights.csv`;
+Examples:
+  clockstride run lock.v --stimulus boats.csv --cycles 2000000 --expect lights.csv
+  clockstride run lock.v --stimulus recorded.vcd.gz --response - --changes | head
+  clockstride run lock.v --random 7 --weight reset=0.001 --cycles 1000000 \\
+    --expect-netlist mapped.v cells.lib
+  clockstride run lock.v --stimulus boats.csv --cycles 300 --picture lock.svg
+  clockstride run lock.v --random 1 --cycles 100_000_000_000 --record lock.record
+  clockstride run counter.v --find-period`;
 
-async function run(files: string[], options: RunOptions): Promise<void> {
+/** Runs what a command line says. `resumed` opens the record of a run that is gone on with. */
+export async function run(
+  files: string[],
+  options: RunOptions,
+  resumed?: (design: Design, netlists: readonly ReadFile[]) => Promise<RecordSession>,
+): Promise<void> {
+  refuseSharing(options);
   const powerUp = options.powerUp ?? 'zero';
-  // The emitter takes a while to get ready: it does so while the netlist is read.
-  const emitter = options.engine === 'wasm' ? startEmitter() : undefined;
-  const { circuit, found } = await loadCircuit(files, options);
+  const emitter = options.engine === 'wasm' ? openCompiler() : undefined;
+  const cache = userCache(options);
+  const loaded = await loadCircuit(files, options, {
+    cache: cache?.netlists,
+    // The compiler takes a while to get ready: it does so while the netlist is read.
+    onReading: () => emitter && isBackground(emitter) && emitter.prepare(),
+  });
+  const { circuit, found, files: netlists, id } = loaded;
   const design = timedDesign(circuit, options, { threeValued: powerUp === 'unknown' });
-  const { stimulus, notes } = stimulusOf(design, options);
+  // Standard output has one use: what is said goes elsewhere where the response takes it.
+  const talk = options.response === STANDARD ? process.stderr : process.stdout;
+  const tell = (text: string) => talk.write(options.json ? '' : `${text}\n`);
+  const judges = await expectationOutlets(options, {
+    ...{ design, engine: options.engine, powerUp, seed: options.seed, onDeparture: tell },
+    ...(emitter && { emitter }),
+  });
+  const waves = waveOutlets(design, options);
   const interrupt = new AbortController();
-  process.once('SIGINT', () => interrupt.abort());
+  process.once('SIGINT', () => {
+    interrupt.abort();
+    // Or the run would wait for a row that may never come.
+    if (options.stimulus === STANDARD || options.expect === STANDARD) process.stdin.destroy();
+  });
+  // What is wrong with the rest of the request must show before there is a record.
+  responseOutlets(options, design, options.record);
+  const session = await recordOf(options, design, netlists, resumed);
+  const writers = responseOutlets(options, design, session?.mark);
+  const { stimulus, notes, outlets, cycles } = await courseOf(design, options, {
+    ...(session?.from && { from: session.from.cycle }),
+    interrupt: interrupt.signal,
+  });
   const summary = await runDesign(design, {
-    ...options,
-    powerUp,
     stimulus,
+    ...(cycles !== undefined && { cycles }),
+    ...(session && { recorder: session.recorder }),
+    ...(session?.from && { from: session.from }),
+    engine: options.engine,
+    powerUp,
+    seed: options.seed,
+    outlets: [...outlets, ...judges, ...waves, ...writers],
     notes,
     interrupt: interrupt.signal,
     // Not before: where a table is wrong, that is all there is to say.
@@ -89,15 +171,51 @@ async function run(files: string[], options: RunOptions): Promise<void> {
       printDiagnostics(found);
       if (options.powerUp === undefined) warnOfStart(design);
     },
-    onDeparture: (text) => process.stdout.write(options.json ? '' : `${text}\n`),
     ...(emitter && { emitter }),
-  });
-  await emitter?.close();
+    ...(cache && id !== undefined && { models: new ModelCache(cache.store, id) }),
+  })
+    .catch((error) => failed(error, session, options.response))
+    // What it still compiles is not worth waiting for.
+    .finally(() => emitter?.close());
+  session?.close();
   const text = options.json
     ? JSON.stringify(summary, null, 2)
-    : summaryText(summary, options.expect);
-  process.stdout.write(`${text}\n`);
-  if (summary.mismatch ?? summary.stopped) process.exitCode = 1;
+    : summaryText(summary, expectationName(options));
+  talk.write(`${text}\n`);
+  process.exitCode = exitStatus(summary);
+  await cache?.store.flush();
+}
+
+// A cycle without result is worth a look at what led there; the record of a bad request is not.
+async function failed(
+  error: unknown,
+  session: RecordSession | undefined,
+  response: string | undefined,
+): Promise<never> {
+  session?.close();
+  if (!(error instanceof RunFault)) await session?.abandon(response);
+  if (error instanceof CannotGoOn) throw new UsageError(`error: --record: ${error.message}`);
+  throw error;
+}
+
+function recordOf(
+  options: RunOptions,
+  design: Design,
+  netlists: readonly ReadFile[],
+  resumed: Parameters<typeof run>[2],
+): Promise<RecordSession> | undefined {
+  if (resumed !== undefined) return resumed(design, netlists);
+  if (options.record === undefined) return undefined;
+  return startRecord(options.record, design, netlists, options);
+}
+
+function refuseSharing({ json, response, stimulus, expect }: RunOptions): void {
+  if (json && response === STANDARD) {
+    throw new UsageError('error: --json and --response - both want standard output');
+  }
+  if (stimulus === STANDARD && expect === STANDARD) {
+    throw new UsageError('error: --stimulus - and --expect - both want standard input');
+  }
 }
 
 function warnOfStart({ circuit }: Design): void {
@@ -107,25 +225,4 @@ function warnOfStart({ circuit }: Design): void {
     `warning: ${withoutStart} of ${circuit.registers.count} registers have neither an initial ` +
       `value nor a set or reset; they start at 0. Choose with --power-up. [register-no-start]\n`,
   );
-}
-
-function stimulusOf(
-  { layout }: Design,
-  options: RunOptions,
-): { stimulus: AsyncIterable<StimulusBlock> | Iterable<StimulusBlock>; notes: string[] } {
-  if (options.stimulus !== undefined) {
-    return { stimulus: readStimulus(options.stimulus, layout), notes: [] };
-  }
-  const { cycles } = options;
-  if (cycles === undefined) {
-    throw new UsageError('error: without a stimulus, say how long to run with --cycles N');
-  }
-  if (options.random !== undefined) {
-    return { stimulus: randomStimulus(layout, options.random, cycles), notes: [] };
-  }
-  const held = 'all inputs are held at 0; use --stimulus or --random to drive them';
-  return {
-    stimulus: heldStimulus(layout, cycles),
-    notes: layout.inputs.bits > 0 ? [held] : [],
-  };
 }

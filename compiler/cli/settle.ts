@@ -1,7 +1,9 @@
 import { Command, InvalidArgumentError, Option } from 'commander';
 import { readStimulus } from '../../runtime/node/index.js';
 import type { StimulusBlock } from '../../runtime/stream.js';
+import type { Circuit } from '../circuit/circuit.js';
 import type { Design } from '../compile.js';
+import { REGISTER_LIMIT } from '../read/verilog/behaviour/memorySelect.js';
 import { settlePicture } from '../settle/picture/settlePicture.js';
 import { MOST_LANES, settleDesign } from '../settle/settleDesign.js';
 import { isAllKnown } from '../settle/settleReport.js';
@@ -10,6 +12,7 @@ import { addClockOption, type ClockOptions, timedDesign } from './clockOption.js
 import { addNetlistOptions, loadCircuit, type NetlistOptions } from './netlists.js';
 import { countArgument, seedArgument } from './numbers.js';
 import { printDiagnostics } from './printDiagnostics.js';
+import { UsageError } from './usageError.js';
 import { writePicture } from './writePicture.js';
 
 interface SettleOptions extends NetlistOptions, ClockOptions {
@@ -62,13 +65,19 @@ Example:
   clockstride settle lock.v --stimulus reset.csv --picture reset.svg`;
 
 async function settle(files: string[], options: SettleOptions): Promise<void> {
-  const { circuit, found } = await loadCircuit(files, options);
+  const { circuit, found } = await loadCircuit(files, { memoriesFrom: ALL_REGISTERS, ...options });
   const design = timedDesign(circuit, options);
+  const [memory] = design.layout.memories;
+  if (memory !== undefined) {
+    throw new UsageError(
+      `error: settle follows registers and latches, and ${memory.name} is a memory of more than ` +
+        `${REGISTER_LIMIT} bits; make it smaller, or leave its module out by --black-box`,
+    );
+  }
   const report = await settleDesign(design, { ...options, ...stimulusOf(design, options) });
   if (options.picture !== undefined) writePicture(options.picture, settlePicture(report));
   printDiagnostics(found);
-  // The words of the command line behind the verb.
-  const rerun = rerunCommand(process.argv.slice(3), report.cycles);
+  const rerun = rerunCommand(rerunWords(circuit, options), report.cycles);
   const text = options.json
     ? JSON.stringify({ ...report, rerun }, null, 2)
     : reportText(report, rerun);
@@ -83,6 +92,18 @@ function stimulusOf(
   if (stimulus !== undefined) return { stimulus: readStimulus(stimulus, layout), notes: [] };
   const held = 'all inputs are held at 0; use --stimulus to drive them';
   return { stimulus: [], notes: layout.inputs.bits > 0 ? [held] : [] };
+}
+
+/** Up to this size arrays are followed bit by bit, as registers. */
+const ALL_REGISTERS = REGISTER_LIMIT + 1;
+
+// The words of the command line behind the verb. A run must know arrays as registers, as it was here.
+function rerunWords({ hierarchy }: Circuit, { memoriesFrom }: SettleOptions): string[] {
+  const hasArrays = hierarchy.modules.some(({ signals }) =>
+    [...signals].some(({ name }) => name.endsWith(']')),
+  );
+  const isTold = memoriesFrom !== undefined || !hasArrays;
+  return [...process.argv.slice(3), ...(isTold ? [] : ['--memories-from', `${ALL_REGISTERS}`])];
 }
 
 /** Options of this verb alone that take a value. */

@@ -1,10 +1,16 @@
 import { isGate } from '../circuit/gates.js';
 import type { Design } from '../compile.js';
 import { checkAgreement } from './benchAgreement.js';
-import { type Contestant, interpreters } from './benchEngines.js';
-import { nativeContestant } from './benchNative.js';
+import { type Contestant, type OwnEngines, ownEngines } from './benchEngines.js';
+import { nativeContestants } from './benchNative.js';
 import type { BenchOptions } from './benchOptions.js';
-import type { BenchEngine, BenchResult, EngineFigures, Timing } from './benchResult.js';
+import type {
+  BenchEngine,
+  BenchResult,
+  CodeFigures,
+  EngineFigures,
+  Timing,
+} from './benchResult.js';
 import { fiveDigits } from './benchResult.js';
 import { BenchRows } from './benchRows.js';
 import { timeAlternately } from './benchTiming.js';
@@ -25,22 +31,34 @@ export async function benchDesign(
   const gates = circuit.kind.reduce((count, kind) => count + Number(isGate(kind)), 0);
   const rows = new BenchRows(design);
   onProgress('compiling to WebAssembly');
-  const contestants: Contestant[] = await interpreters(design, rows);
-  const native = await nativeContestant(design, rows, gates, options);
-  const notes: string[] = [];
-  if ('note' in native) notes.push(native.note);
-  else {
-    contestants.push(native);
-    notes.push(`native is C compiled by ${native.compiler} -O2`);
-  }
+  const own = await ownEngines(design, rows);
+  const native = await nativeContestants(design, rows, gates, options);
+  const contestants: Contestant[] = [...own.contestants, ...native.contestants];
+  const isTabled = contestants.some(({ name }) => name === 'table');
+  const notes = [...(isTabled ? [TABLE_NOTE] : []), ...native.notes];
   try {
     onProgress('comparing the responses');
     const agreement = await checkAgreement(design.layout, contestants, rows.count);
     const timings = await timeAlternately(contestants, { seconds, rounds, onProgress });
-    return { ...resultOf(design, gates, contestants, timings), agreement, rounds, notes };
+    const code = codeFigures(own.code, gates);
+    return { ...resultOf(design, gates, contestants, timings), code, agreement, rounds, notes };
   } finally {
-    if ('close' in native) native.close();
+    for (const each of native.contestants) each.close();
   }
+}
+
+const TABLE_NOTE =
+  'table is another algorithm: it looks next states and responses up that have come before, and ' +
+  'is what a run of this circuit uses';
+
+function codeFigures(code: OwnEngines['code'], gates: number): CodeFigures {
+  const { operations, vectorOperations, bytes } = code;
+  const perGate = (count: number): number => fiveDigits(count / Math.max(1, gates));
+  return {
+    ...code,
+    operationsPerGate: perGate(operations + vectorOperations),
+    bytesPerGate: perGate(bytes),
+  };
 }
 
 function resultOf(
@@ -48,7 +66,7 @@ function resultOf(
   gates: number,
   contestants: readonly Contestant[],
   timings: readonly Timing[],
-): Omit<BenchResult, 'agreement' | 'rounds' | 'notes'> {
+): Omit<BenchResult, 'code' | 'agreement' | 'rounds' | 'notes'> {
   const figures = contestants.map(({ name, buildMs }, i): [BenchEngine, EngineFigures] => [
     name,
     { ...timings[i]!, buildMs: fiveDigits(buildMs) },

@@ -1,10 +1,11 @@
 import type { Engine } from '../../runtime/engine.js';
 import { WasmEngine } from '../../runtime/wasmEngine.js';
-import { type Design, programsOf } from '../compile.js';
+import type { WasmModel } from '../../runtime/wasmModel.js';
+import { type Design, packedProgramsOf, programsOf } from '../compile.js';
 import { emitModel, loadBinaryen } from '../emit/emitModel.js';
 import { BytecodeEngine } from '../interpret/bytecodeEngine.js';
 import { ReferenceEngine } from '../interpret/reference/referenceEngine.js';
-import type { BenchEngine } from './benchResult.js';
+import type { BenchEngine, CodeFigures } from './benchResult.js';
 import type { BenchRows } from './benchRows.js';
 
 /** An engine as the measurement sees it. */
@@ -20,30 +21,66 @@ export interface Contestant {
   time(cycles: number): Promise<number>;
 }
 
-/** Builds the engines that run inside this process, generated code first. */
-export async function interpreters(design: Design, rows: BenchRows): Promise<Contestant[]> {
+/** The engines that run inside this process, generated code first, and how much of it there is. */
+export interface OwnEngines {
+  readonly contestants: readonly Contestant[];
+  readonly code: Pick<CodeFigures, 'operations' | 'vectorOperations' | 'bytes'>;
+}
+
+/** Builds the engines that run inside this process. */
+export async function ownEngines(design: Design, rows: BenchRows): Promise<OwnEngines> {
   // Loading the library is no part of compiling, and takes longer than most circuits.
   const binaryen = await loadBinaryen();
+  const wasm = await timed(() => compiled(binaryen, design, rows.state));
+  const table = await tableEngine(wasm.made.model, rows);
   const start = performance.now();
   const programs = programsOf(design);
   const passesMs = performance.now() - start;
-  const wasm = await timed(() => WasmEngine.create(emitModel(binaryen, programs, design.layout)));
   const bytecode = await timed(() => new BytecodeEngine(programs, design.layout));
   const reference = await timed(() => new ReferenceEngine(design.circuit, design));
-  return [
-    contestant('wasm', wasm.engine, passesMs + wasm.ms, rows),
-    contestant('bytecode', bytecode.engine, passesMs + bytecode.ms, rows),
-    contestant('reference', reference.engine, reference.ms, rows),
+  const contestants = [
+    contestant('wasm', wasm.made.engine, wasm.ms, rows),
+    ...(table ? [contestant('table', table, wasm.ms, rows)] : []),
+    contestant('bytecode', bytecode.made, passesMs + bytecode.ms, rows),
+    contestant('reference', reference.made, reference.ms, rows),
   ];
+  return { contestants, code: wasm.made.code };
 }
 
-async function timed(
-  make: () => Engine | Promise<Engine>,
-): Promise<{ engine: Engine; ms: number }> {
-  const start = performance.now();
-  const engine = await make();
-  return { engine, ms: performance.now() - start };
+/** Straight-line code alone: the table is an engine of its own here. */
+async function compiled(
+  binaryen: Awaited<ReturnType<typeof loadBinaryen>>,
+  design: Design,
+  start: Uint8Array,
+) {
+  const programs = packedProgramsOf(design, start);
+  const model = { ...emitModel(binaryen, programs, design.layout), start };
+  const code = {
+    operations: sum(programs.programs.map(({ op }) => op.length)),
+    vectorOperations: sum(programs.programs.map(({ vectors }) => vectors?.steps.length ?? 0)),
+    bytes: model.bytes.length,
+  };
+  return { model, code, engine: await WasmEngine.create(model, undefined, { usesTable: false }) };
 }
+
+/** Cycles after which an engine has found out whether a table is worth it. */
+const TRIAL_CYCLES = 1 << 18;
+
+// The engine that anyone gets, where it has come to run by table.
+async function tableEngine(model: WasmModel, rows: BenchRows): Promise<WasmEngine | undefined> {
+  const engine = await WasmEngine.create(model);
+  if (!engine.runsByTable) return undefined;
+  rows.time(engine, TRIAL_CYCLES);
+  return engine.runsByTable ? engine : undefined;
+}
+
+async function timed<T>(make: () => T | Promise<T>): Promise<{ made: T; ms: number }> {
+  const start = performance.now();
+  const made = await make();
+  return { made, ms: performance.now() - start };
+}
+
+const sum = (counts: readonly number[]): number => counts.reduce((so, count) => so + count, 0);
 
 function contestant(
   name: BenchEngine,

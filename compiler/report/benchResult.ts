@@ -1,5 +1,19 @@
-/** The ways to run a design that are compared. */
-export type BenchEngine = 'wasm' | 'bytecode' | 'reference' | 'native';
+/**
+ * The ways to run a design that are compared: straight-line generated code; the same module by its
+ * table, another algorithm; the interpreters; straight-line C at optimization level 2, for any
+ * machine of the kind and for this very one (`-march=native`).
+ */
+export const benchEngines = [
+  'wasm',
+  'table',
+  'bytecode',
+  'reference',
+  'native',
+  'nativeMarch',
+] as const;
+
+/** One of `benchEngines`. */
+export type BenchEngine = (typeof benchEngines)[number];
 
 /** All but the one that the others are compared with. */
 export type ComparedEngine = Exclude<BenchEngine, 'wasm'>;
@@ -11,6 +25,8 @@ export interface Timing {
   /** Nanoseconds a cycle in the fastest and in the slowest round. */
   readonly fastest: number;
   readonly slowest: number;
+  /** Nanoseconds a cycle in the best of many short bursts: hardly disturbed by other programs. */
+  readonly best: number;
   /** Cycles measured, all rounds together. */
   readonly cycles: number;
 }
@@ -19,9 +35,30 @@ export interface Timing {
 export interface EngineFigures extends Timing {
   /**
    * Milliseconds from the circuit to an engine that is ready: passes, emission and instantiation
-   * for `wasm`, passes for `bytecode`, emission and C compilation for `native`.
+   * for `wasm` and `table`, passes for `bytecode`, emission and C compilation for `native` and
+   * `nativeMarch`.
    */
   readonly buildMs: number;
+}
+
+/** How much code a cycle takes. */
+export interface CodeFigures {
+  /** Operations on single bits, of any width of the machine's words. */
+  readonly operations: number;
+  /** Operations on sixteen bits at a time. */
+  readonly vectorOperations: number;
+  /** Of the module. */
+  readonly bytes: number;
+  readonly operationsPerGate: number;
+  readonly bytesPerGate: number;
+}
+
+/** Milliseconds from pressing return to the end of a run of one cycle: medians of a few runs. */
+export interface FirstAnswer {
+  /** With nothing known from before. */
+  readonly coldMs: number;
+  /** With the netlist and the module in the cache. */
+  readonly cachedMs: number;
 }
 
 /** What `bench` found; printed as it stands by `--json`. */
@@ -32,8 +69,12 @@ export interface BenchResult {
   /** Cycles of generated code that were measured. */
   readonly cycles: number;
   readonly engines: Readonly<
-    Record<'wasm' | 'bytecode' | 'reference', EngineFigures> & { native?: EngineFigures }
+    Record<'wasm' | 'bytecode' | 'reference', EngineFigures> &
+      Partial<Record<BenchEngine, EngineFigures>>
   >;
+  readonly code: CodeFigures;
+  /** Measured by the command alone. */
+  readonly firstAnswer?: FirstAnswer;
   /** How many times as long as `wasm` each other engine takes for a cycle. */
   readonly ratios: Readonly<Partial<Record<ComparedEngine, number>>>;
   /** In how many cycles each other engine's response was compared with that of `wasm`, and equal. */

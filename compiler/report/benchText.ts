@@ -1,3 +1,4 @@
+import { aligned, rate, shown } from './bench/columns.js';
 import type { BenchEngine, BenchResult, EngineFigures } from './benchResult.js';
 
 const headings = ['engine', 'ns/cycle', 'fastest', 'slowest', 'cycles/s', 'build ms', 'x wasm'];
@@ -14,6 +15,8 @@ export function benchText(result: BenchResult): string {
     ...aligned([headings, ...rows]),
     '',
     `Median of ${rounds} rounds, taken in turn, on the same random stimulus.`,
+    codeLine(result),
+    ...firstAnswerLines(result),
     agreementLine(result),
     ...result.notes.map((note) => `note: ${note}`),
   ].join('\n');
@@ -36,20 +39,15 @@ function agreementLine({ agreement }: BenchResult): string {
   return `Responses equal those of wasm in the cycles compared: ${cycles.join(', ')}.`;
 }
 
-const shown = (value: number): string => value.toFixed(value < 10 ? 2 : value < 1000 ? 1 : 0);
-
-function rate(perSecond: number): string {
-  if (perSecond >= 1e6) return `${(perSecond / 1e6).toPrecision(3)} M`;
-  if (perSecond >= 1e3) return `${(perSecond / 1e3).toPrecision(3)} k`;
-  return `${perSecond.toPrecision(3)}  `;
+function codeLine({ code, gates }: BenchResult): string {
+  const { operations, vectorOperations, bytes, operationsPerGate, bytesPerGate } = code;
+  const vectors = vectorOperations === 0 ? '' : ` and ${vectorOperations} on sixteen bits`;
+  const each = gates === 0 ? '' : `: ${operationsPerGate} and ${bytesPerGate} a gate`;
+  return `A cycle of wasm is ${operations} operations${vectors}, the module ${bytes} bytes${each}.`;
 }
 
-/** Names stand left in their column, figures right. */
-function aligned(rows: readonly (readonly string[])[]): string[] {
-  const widths = rows[0]!.map((_, column) => Math.max(...rows.map((row) => row[column]!.length)));
-  return rows.map(([name, ...figures]) =>
-    [name!.padEnd(widths[0]!), ...figures.map((cell, i) => cell.padStart(widths[i + 1]!))].join(
-      '   ',
-    ),
-  );
+function firstAnswerLines({ firstAnswer }: BenchResult): string[] {
+  if (firstAnswer === undefined) return [];
+  const [cold, cached] = [shown(firstAnswer.coldMs), shown(firstAnswer.cachedMs)];
+  return [`A run of one cycle takes ${cold} ms, and ${cached} ms from the cache.`];
 }

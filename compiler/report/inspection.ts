@@ -1,7 +1,7 @@
 import { clockRootsOf } from '../circuit/analyses/clockRoots.js';
 import { gatesByLevel, registersByDepth } from '../circuit/analyses/depthCounts.js';
 import { leafInstances } from '../circuit/analyses/leafInstances.js';
-import { gateInfo, isGate } from '../circuit/gates.js';
+import { GateKind, gateInfo, isGate } from '../circuit/gates.js';
 import { levelsOf } from '../circuit/levels.js';
 import { loopsOf } from '../circuit/loops.js';
 import type { Design } from '../compile.js';
@@ -9,6 +9,7 @@ import type { Diagnostic } from '../diagnostics/diagnostics.js';
 import { type ClockSummary, clockSummaries } from './inspect/clockSummary.js';
 import { type Fanout, largestFanouts } from './inspect/fanoutSummary.js';
 import { loopSummaries } from './inspect/loopSummary.js';
+import { type MemorySummary, memorySummaries } from './inspect/memorySummary.js';
 import { NetWords } from './inspect/netWords.js';
 import { deepestSteps, type PathStep } from './inspect/pathSummary.js';
 import { findProblems } from './inspect/problems/findProblems.js';
@@ -40,6 +41,8 @@ export interface Inspection {
   readonly cells: Readonly<Record<string, number>>;
   readonly registers: number;
   readonly latches: number;
+  /** Words that are held as a memory; small memories are among the registers. */
+  readonly memories: readonly MemorySummary[];
   readonly state: StateSummary;
   /** Combinational loops, those through open latches included. */
   readonly loops: number;
@@ -79,6 +82,7 @@ export function inspect(design: Design, found: readonly Diagnostic[]): Inspectio
     cells: Object.fromEntries(leafInstances(circuit.hierarchy)),
     registers: circuit.registers.count,
     latches: circuit.latches.count,
+    memories: memorySummaries(design, roots),
     state: stateSummary(circuit),
     loops: loopsOf(circuit).nets.length,
     loopNets: loopSummaries(circuit, MOST_LOOPS).map(({ path }) =>
@@ -104,7 +108,7 @@ function gatesByKind(kinds: Uint8Array): (readonly [string, number])[] {
   const counts = new Uint32Array(256);
   for (const kind of kinds) counts[kind]!++;
   return Array.from(counts.entries())
-    .filter(([kind, count]) => isGate(kind) && count > 0)
+    .filter(([kind, count]) => isGate(kind) && kind !== GateKind.MemoryRead && count > 0)
     .map(([kind, count]) => [gateInfo(kind).name, count] as const)
     .sort(([, p], [, q]) => q - p);
 }

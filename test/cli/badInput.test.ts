@@ -50,7 +50,7 @@ describe('a wrong input', () => {
       [...held.slice(0, 4), '--cycles', '1', '--response', 'a/b'],
       'error: ',
     ],
-    ['a top that is none', [...held, '--top', 'summit'], 'error: '],
+    ['a top that is none', [...held, '--top', 'summit'], 'sum.v:1:'],
   ])('is refused with its place and nothing else: %s', async (_, args, beginning) => {
     const { status, stdout, stderr } = await folder.run(...args);
     expect(stderr.slice(0, beginning.length)).toBe(beginning);
@@ -76,7 +76,7 @@ describe('a wrong input', () => {
 describe('a wrong request', () => {
   it.each([
     ['an unknown option', [...held, '--quick'], '--quick'],
-    ['an unknown verb', ['walk', 'sum.v'], 'walk'],
+    ['an unknown verb', ['levitate', 'sum.v'], 'levitate'],
     ['no netlist', ['run'], 'netlist'],
     ['no length', run, '--cycles'],
     ['random bits without a length', [...run, '--random', '1'], '--cycles'],

@@ -1,10 +1,11 @@
-import { mkdtempSync, rmSync, writeFileSync } from 'node:fs';
+import { existsSync, mkdtempSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { CommanderError } from 'commander';
 import { afterAll, afterEach, beforeAll, describe, expect, it, vi } from 'vitest';
 import { benchCommand } from '../../compiler/cli/bench.js';
 import { InputError } from '../../compiler/diagnostics/diagnostics.js';
+import type { BenchSuite } from '../../compiler/report/bench/suite.js';
 import type { BenchResult } from '../../compiler/report/benchResult.js';
 
 let folder = '';
@@ -41,6 +42,7 @@ async function bench(...args: string[]): Promise<{ stdout: string; stderr: strin
   return written;
 }
 
+const hold = 'INPUT(a)\nOUTPUT(q)\nq = DFF(n)\nm = AND(a, q)\nn = OR(m, q)\n';
 const toggle = 'INPUT(a)\nOUTPUT(q)\nq = DFF(n)\nn = XOR(a, q)\n';
 
 describe('bench', () => {
@@ -55,7 +57,29 @@ describe('bench', () => {
     const { stdout } = await bench(file('toggle.bench', toggle), '--json');
     const result = JSON.parse(stdout) as BenchResult;
     expect(result).toMatchObject({ circuit: 'toggle', gates: 1, registers: 1 });
-    expect(Object.keys(result.engines)).toEqual(['wasm', 'bytecode', 'reference']);
+    expect(Object.keys(result.engines)).toEqual(['wasm', 'table', 'bytecode', 'reference']);
+  });
+
+  it('takes each netlist as a circuit of its own where that is asked for', async () => {
+    const netlists = [file('toggle.bench', toggle), file('hold.bench', hold)];
+    const { stdout } = await bench('--each', ...netlists);
+    expect(stdout).toMatch(/^circuit +gates .*\ntoggle +1 .*\nhold +2 /);
+    const suite = JSON.parse((await bench('--each', ...netlists, '--json')).stdout) as BenchSuite;
+    expect(suite.circuits.map(({ circuit }) => circuit)).toEqual(['toggle', 'hold']);
+    expect(suite.machine.cores).toBeGreaterThan(0);
+    expect(suite.means).toEqual({});
+  });
+
+  it('takes several files as one circuit otherwise', async () => {
+    const netlists = [file('toggle.bench', toggle), file('hold.bench', hold)];
+    await expect(bench(...netlists)).rejects.toThrow(InputError);
+  });
+
+  it('refuses a picture where no native C was measured', async () => {
+    const netlist = file('toggle.bench', toggle);
+    const picture = join(folder, 'speed.svg');
+    await expect(bench(netlist, '--picture', picture)).rejects.toThrow(/--picture: .*native C/);
+    expect(existsSync(picture)).toBe(false);
   });
 
   it('gives status 1 and no figures where a cycle has no result', async () => {

@@ -30,8 +30,12 @@ describe('a bench', () => {
   it('has the figures of every engine', async () => {
     const result = await bench(counter);
     expect(result).toMatchObject({ circuit: 'small', gates: 3, registers: 2, rounds: 2 });
-    const names = ['wasm', 'bytecode', 'reference', ...('command' in compiler ? ['native'] : [])];
-    expect(Object.keys(result.engines)).toEqual(names);
+    const native = 'command' in compiler ? ['native', 'nativeMarch'] : [];
+    const names = ['wasm', 'table', 'bytecode', 'reference', ...native];
+    // A compiler need not know the machine that it runs on.
+    const measured = Object.keys(result.engines);
+    expect(names.filter((name) => measured.includes(name))).toEqual(measured);
+    expect(measured).toEqual(expect.arrayContaining(names.slice(0, -1)));
     for (const { nsPerCycle, fastest, slowest, cycles, buildMs } of Object.values(result.engines)) {
       expect(nsPerCycle).toBeGreaterThan(0);
       expect(fastest).toBeLessThanOrEqual(nsPerCycle);
@@ -40,6 +44,28 @@ describe('a bench', () => {
       expect(buildMs).toBeGreaterThan(0);
     }
     expect(result.cycles).toBe(result.engines.wasm.cycles);
+  });
+
+  it('has the table as an engine of its own only where runs use it', async () => {
+    const small = await bench(counter, { native: 'never' });
+    expect(small.engines.table).toBeDefined();
+    expect(small.notes.join()).toContain('table is another algorithm');
+    const inputs = Array.from({ length: 20 }, (_, i) => `i${i}`);
+    const wide = await bench(
+      { ...counter, inputs: [...counter.inputs, ...inputs] },
+      { native: 'never' },
+    );
+    expect(wide.engines.table).toBeUndefined();
+    expect(wide.notes.join()).not.toContain('table');
+  });
+
+  it('says how much code a cycle takes', async () => {
+    const { code, gates } = await bench(counter, { native: 'never' });
+    expect(code.operations).toBeGreaterThan(0);
+    expect(code.bytes).toBeGreaterThan(100);
+    const each = (code.operations + code.vectorOperations) / gates;
+    expect(code.operationsPerGate).toBeCloseTo(each, 3);
+    expect(code.bytesPerGate * gates).toBeCloseTo(code.bytes, 0);
   });
 
   it('has the ratio of each engine to generated code', async () => {
@@ -88,7 +114,7 @@ describe('a bench without native C says why', () => {
     const result = await bench(spec, options);
     expect(result.engines.native).toBeUndefined();
     expect(result.ratios.native).toBeUndefined();
-    return result.notes;
+    return result.notes.filter((note) => note.startsWith('native'));
   };
 
   it('where it was not asked for', async () => {

@@ -20,6 +20,7 @@ const layout: ModelLayout = {
   inputs: layRow([]),
   outputs: layRow([port('a', 1), port('v', 32, 31, 0, true), port('w', 4, 3, 6, true)]),
   stateNames: [],
+  memories: [],
 };
 
 const giving = (name: BenchEngine, ...words: number[]): Contestant => ({

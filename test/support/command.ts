@@ -2,15 +2,24 @@ import { type ChildProcessByStdio, spawn } from 'node:child_process';
 import { mkdtempSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import type { Readable } from 'node:stream';
+import type { Readable, Writable } from 'node:stream';
 import { text } from 'node:stream/consumers';
 import { fileURLToPath } from 'node:url';
 import { afterAll } from 'vitest';
 
 const command = fileURLToPath(new URL('../../dist/compiler/cli/main.js', import.meta.url));
 
+/** Where the commands of one test file keep what they have compiled, on systems that know XDG. */
+export const cacheHome = mkdtempSync(join(tmpdir(), 'clockstride-cache-'));
+afterAll(() => rmSync(cacheHome, { recursive: true }));
+
+const environment = { ...process.env, XDG_CACHE_HOME: cacheHome };
+
 /** The command at work. */
 export type Started = ChildProcessByStdio<null, Readable, Readable>;
+
+/** The command at work, with a way to its standard input. */
+export type StartedFed = ChildProcessByStdio<Writable, Readable, Readable>;
 
 /** What a command that has ended left behind. */
 export interface Outcome {
@@ -50,7 +59,17 @@ export class WorkFolder {
   start(...args: string[]): Started {
     return spawn(process.execPath, [command, ...args], {
       cwd: this.path,
+      env: environment,
       stdio: ['ignore', 'pipe', 'pipe'],
+    });
+  }
+
+  /** Starts the built command in the folder, to be fed. */
+  startFed(...args: string[]): StartedFed {
+    return spawn(process.execPath, [command, ...args], {
+      cwd: this.path,
+      env: environment,
+      stdio: ['pipe', 'pipe', 'pipe'],
     });
   }
 
@@ -61,7 +80,7 @@ export class WorkFolder {
 }
 
 /** Waits for the end of a command. */
-export async function outcomeOf(started: Started): Promise<Outcome> {
+export async function outcomeOf(started: Started | StartedFed): Promise<Outcome> {
   const ended = new Promise<number | null>((resolve, reject) => {
     started.once('error', reject);
     started.once('close', resolve);

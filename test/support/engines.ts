@@ -5,6 +5,7 @@ import { ReferenceEngine } from '../../compiler/interpret/reference/referenceEng
 import { type Engine, RunFault } from '../../runtime/engine.js';
 import { rowStride } from '../../runtime/layout.js';
 import { WasmEngine } from '../../runtime/wasmEngine.js';
+import { bothWays } from './tableMachines.js';
 
 const emitter = localEmitter();
 
@@ -17,11 +18,13 @@ export async function enginesOf(design: Design): Promise<{
   reference: Engine;
   others: readonly (readonly [name: string, engine: Engine])[];
 }> {
+  const { byTable, straight } = await bothWays(design, emitter);
   return {
     reference: new ReferenceEngine(design.circuit, design),
     others: [
       ['bytecode', new BytecodeEngine(programsOf(design), design.layout)],
-      ['wasm', await wasmEngineOf(design)],
+      ['wasm by table where it can', byTable],
+      ['wasm', straight],
     ],
   };
 }
@@ -33,6 +36,8 @@ export interface Course {
   readonly cycles: number;
   /** Undefined after a cycle without result. */
   readonly state: Uint8Array | undefined;
+  /** The contents of memories, as `state`. */
+  readonly memory: Uint8Array | undefined;
 }
 
 /** Resets an engine and runs it over packed stimulus rows, up to a cycle without result. */
@@ -41,17 +46,20 @@ export function courseOf(
   state: Uint8Array,
   rows: Uint32Array,
   cycles: number,
+  contents?: Uint8Array,
 ): Course {
   const { inputs, outputs, threeValued } = engine.layout;
   const stride = rowStride(outputs, threeValued);
   const response = new Uint32Array(cycles * stride);
   engine.reset(state);
+  if (contents !== undefined) engine.loadMemory(contents);
   try {
     engine.run(cycles, rows, rowStride(inputs, threeValued), response);
-    return { response, cycles, state: engine.state() };
+    return { response, cycles, state: engine.state(), memory: engine.memoryState() };
   } catch (error) {
     if (!(error instanceof RunFault)) throw error;
     const { completed } = error;
-    return { response: response.slice(0, completed * stride), cycles: completed, state: undefined };
+    const ended = { cycles: completed, state: undefined, memory: undefined };
+    return { response: response.slice(0, completed * stride), ...ended };
   }
 }

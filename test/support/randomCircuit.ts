@@ -3,6 +3,7 @@ import { CircuitBuilder } from '../../compiler/circuit/builder.js';
 import { type Circuit, Edge, Priority } from '../../compiler/circuit/circuit.js';
 import { GateKind } from '../../compiler/circuit/gates.js';
 import { type NetId, NO_NET } from '../../compiler/circuit/ids.js';
+import { MemoryBuilding, type MemoryRecipe, memoryRecipe } from './randomMemories.js';
 
 /** What random circuits may contain. All is off or small unless asked for. */
 export interface RandomCircuitOptions {
@@ -25,6 +26,8 @@ export interface RandomCircuitOptions {
   readonly loops?: boolean;
   /** Constants x. Two-valued engines read them as 0. */
   readonly unknowns?: boolean;
+  /** Memories that are no registers. */
+  readonly memories?: boolean;
 }
 
 /** A choice of a net: halved until it is below the number of nets. Of a clock: modulo. */
@@ -64,6 +67,7 @@ export interface CircuitRecipe {
   readonly laterGates: readonly GateRecipe[];
   /** Gates that all others may read and that may read all others. */
   readonly feedback: readonly GateRecipe[];
+  readonly memories?: readonly MemoryRecipe[];
   readonly outputs: readonly { readonly port: PortRecipe; readonly nets: readonly Pick[] }[];
 }
 
@@ -104,6 +108,7 @@ function recipe(options: RandomCircuitOptions): fc.Arbitrary<CircuitRecipe> {
     gates: list(gate, maxGates),
     laterGates: list(gate, options.latches ? maxGates >> 1 : 0),
     feedback: list(gate, options.loops ? 3 : 0),
+    memories: list(memoryRecipe(pick), options.memories ? 2 : 0),
     outputs: fc.array(output, { minLength: 1, maxLength: maxOutputs, size: 'max' }),
   });
 }
@@ -195,8 +200,12 @@ class RecipeBuilder {
     const feedbackNets = feedback.map((_, i) => this.#net(`f${i}`));
     this.#nets.push(...registerNets, ...feedbackNets);
     if (this.#nets.length === 0) this.#nets.push(this.#builder.gate(GateKind.Zero, []));
+    const memories = new MemoryBuilding(this.#builder, this.#recipe.memories ?? []);
+    const [pick, name] = [this.#pick.bind(this), this.#net.bind(this)];
+    this.#nets.push(...memories.read(false, pick, name));
     for (const gate of gates) this.#nets.push(this.#addGate(gate, 'g'));
     const notClk = this.#drive('notClk', GateKind.Not, [clk]);
+    this.#nets.push(...memories.read(true, pick, name));
     latches.forEach((latch, i) => {
       this.#addLatch(latch, latchNets[i]!, [notClk, clk]);
     });
@@ -207,6 +216,7 @@ class RecipeBuilder {
       this.#builder.drive(feedbackNets[i]!, kind, nets);
     });
     this.#clocks = this.#clockNets(clk, notClk, registerNets);
+    memories.write(pick, this.#clocks, this.#recipe.clocking === 'oneEdge');
     registers.forEach((register, i) => {
       this.#addRegister(register, i, registerNets);
     });

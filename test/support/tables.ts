@@ -13,6 +13,7 @@ export function layoutOf(
     inputs: layRow(inputs.map(portOf)),
     outputs: layRow(outputs.map(portOf)),
     stateNames: [],
+    memories: [],
   };
 }
 

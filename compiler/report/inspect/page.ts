@@ -1,5 +1,6 @@
 import type { Inspection, Problem } from '../inspection.js';
 import type { ClockSummary } from './clockSummary.js';
+import type { MemorySummary } from './memorySummary.js';
 import { counted } from './netWords.js';
 import type { PathStep } from './pathSummary.js';
 import { textPlot } from './textPlot.js';
@@ -13,6 +14,7 @@ const LABEL = 13;
 const MOST_PORTS = 12;
 const MOST_CLOCKS = 12;
 const MOST_KINDS = 12;
+const MOST_MEMORIES = 12;
 const MOST_STEPS = 16;
 const MOST_PROBLEMS = 50;
 
@@ -27,6 +29,7 @@ export function inspectionPage(inspection: Inspection, paint: Paint = (text) => 
     ...cellRows(inspection),
     ['registers', [number(registers)]],
     ['latches', [number(latches)]],
+    ...memoryRows(inspection),
     ['state', stateWords(inspection)],
     ['loops', [number(loops)]],
     ['depth', [`${counted(depth, 'level')} of gates`]],
@@ -112,6 +115,19 @@ function tallied(counts: readonly (readonly [string, number])[]): string[] {
 function cellRows({ cells }: Inspection): [string, string[]][] {
   const total = Object.values(cells).reduce((sum, count) => sum + count, 0);
   return total === 0 ? [] : [['cells', tally(total, cells)]];
+}
+
+function memoryRows({ memories }: Inspection): [string, string[]][] {
+  if (memories.length === 0) return [];
+  const lines = shortened(memories.map(memoryText), MOST_MEMORIES);
+  return lines.map((line, i): [string, string[]] => [i === 0 ? 'memories' : '', line.split(' ')]);
+}
+
+function memoryText({ name, words, width, readPorts, writePorts, clocks }: MemorySummary): string {
+  const shape = `${counted(words, 'word')} of ${counted(width, 'bit')}`;
+  const on = clocks.length > 0 ? ` on ${clocks.join(' and ')}` : '';
+  const writes = `${counted(writePorts, 'write port')}${on}`;
+  return `${name} (${shape}; ${counted(readPorts, 'read port')}, ${writes})`;
 }
 
 function stateWords({ state, registers, latches }: Inspection): string[] {

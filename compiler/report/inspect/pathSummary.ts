@@ -2,6 +2,7 @@ import { deepestPath } from '../../circuit/analyses/deepestPath.js';
 import type { Circuit } from '../../circuit/circuit.js';
 import { portBitName } from '../../circuit/clockPorts.js';
 import { gateInfo } from '../../circuit/gates.js';
+import { writePins } from '../../circuit/memoryTable.js';
 import type { NetWords } from './netWords.js';
 
 /** A net on a path and what drives it; or, as the last step, what the path ends at. */
@@ -42,6 +43,9 @@ function endOf(circuit: Circuit, net: number, words: NetWords): PathStep | undef
       const entry = column.indexOf(net);
       if (entry >= 0) return step(circuit, output[entry]!, words);
     }
+  }
+  for (const { name, writes } of circuit.memories) {
+    if (writes.some((port) => writePins(port).includes(net))) return { net: name, kind: 'memory' };
   }
   for (const port of outputs) {
     const bit = port.nets.indexOf(net);

@@ -45,6 +45,27 @@ describe('inspect finds', () => {
     });
   });
 
+  it('registers that reset themselves', () => {
+    const text = netlist(
+      'input clk, d, output reg p',
+      'wire clear;',
+      'buf (clear, p);',
+      'always @(posedge clk or posedge clear) if (clear) p <= 0; else p <= d;',
+    );
+    expect(problemsOf(text, 'combinational-loop')).toEqual([]);
+    const { severity, message } = problemOf(text, 'self-reset');
+    expect(severity).toBe('warning');
+    expect(message).toContain('the set or reset of 1 register follows from their own outputs');
+    expect(message).toContain('p (top.v:4)');
+  });
+
+  it('cells that run from their table', () => {
+    const text = `primitive both (q, c, d); output q; reg q; input c, d;
+      table * 0:?:0; * 1:?:1; ? *:?:-; endtable endprimitive
+      module t (input c, d, output q); both (q, c, d); endmodule`;
+    expect(problemOf(text, 'table-run')).toMatchObject({ severity: 'note', place: '1:11' });
+  });
+
   it('a gate that reads itself', () => {
     const text = netlist('input a, output y', 'or (y, a, y);');
     expect(problemOf(text, 'combinational-loop').message).toBe(

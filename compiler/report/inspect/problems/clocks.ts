@@ -1,6 +1,9 @@
 import { NO_ROOTS } from '../../../circuit/analyses/rootSets.js';
 import { NO_NET } from '../../../circuit/ids.js';
+import { memoryWrites } from '../../../circuit/memoryPorts.js';
+import { writePins } from '../../../circuit/memoryTable.js';
 import { gatedClocks } from '../gatedClocks.js';
+import { memorySpan } from '../memorySummary.js';
 import { counted, listText } from '../netWords.js';
 import type { ProblemContext } from './context.js';
 
@@ -10,6 +13,7 @@ const SHOWN = 4;
 export function findClockProblems(context: ProblemContext): void {
   findGuessed(context);
   findUnclocked(context);
+  findUnclockedWrites(context);
   findClocksAsData(context);
   findGated(context);
 }
@@ -33,6 +37,19 @@ function findUnclocked({ design, roots, words, diagnostics }: ProblemContext): v
     `no clock port moves the clock pin of ${counted(unclocked.length, 'register')}: ` +
     words.list(unclocked);
   diagnostics.add('register-unclocked', message, words.span(unclocked[0]!));
+}
+
+function findUnclockedWrites({ design: { circuit }, roots, diagnostics }: ProblemContext): void {
+  const unclocked = memoryWrites(circuit).filter(
+    (_, port) => roots.writes.roots[port] === NO_ROOTS,
+  );
+  if (unclocked.length === 0) return;
+  const memories = [...new Set(unclocked.map(({ memory }) => memory))];
+  const names = memories.slice(0, SHOWN).map((number) => circuit.memories[number]!.name);
+  const message =
+    `no clock port moves the clock of ${counted(unclocked.length, 'write port')} of memories: ` +
+    listText(names, memories.length);
+  diagnostics.add('register-unclocked', message, memorySpan(circuit, memories[0]!));
 }
 
 function findGated({ design: { circuit }, roots, words, diagnostics }: ProblemContext): void {
@@ -91,6 +108,11 @@ function dataUses(context: ProblemContext): DataUse[] {
       note(set[entry]!, () => `the set of ${words.placed(net)}`);
       note(reset[entry]!, () => `the reset of ${words.placed(net)}`);
     });
+  }
+  for (const { memory, port } of memoryWrites(design.circuit)) {
+    const { name } = design.circuit.memories[memory]!;
+    const [, ...pins] = writePins(port);
+    for (const net of pins) note(net, () => `memory ${name}`);
   }
   for (const port of outputs) {
     const clocked = port.nets.find((net) => roots.reaching[net] !== NO_ROOTS);

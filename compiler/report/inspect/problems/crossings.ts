@@ -26,12 +26,16 @@ function reportCrossings({ design, roots, words, diagnostics }: ProblemContext):
     return members.map((port) => clocks.ports[port]!.name).join(' and ') || 'many clocks';
   };
   const shown = Array.from(captures.subarray(0, SHOWN), (register) => {
-    const { from, to } = crossings.into(register);
-    const ends = [from, to].map((r) => `${words.placed(output[r]!)} on ${clockOf(r)}`);
+    const { from, to, memory } = crossings.into(register);
+    const ends = [from, to].map((r) =>
+      r < 0
+        ? `memory ${circuit.memories[memory!]!.name}`
+        : `${words.placed(output[r]!)} on ${clockOf(r)}`,
+    );
     return ends.join(' to ');
   });
   const message =
     `${counted(captures.length, 'register')} capture${captures.length === 1 ? 's' : ''} values ` +
-    `from registers on another clock: ${listText(shown, captures.length)}`;
+    `from ${circuit.memories.length > 0 ? 'registers and memories' : 'registers'} on another clock: ${listText(shown, captures.length)}`;
   diagnostics.add('clock-crossing', message, words.span(output[captures[0]!]!));
 }

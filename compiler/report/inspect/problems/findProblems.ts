@@ -6,6 +6,7 @@ import { findCrossings } from './crossings.js';
 import { findFloating } from './floating.js';
 import { findLoops } from './loops.js';
 import { findUnconnectedPorts } from './ports.js';
+import { findPulses } from './pulses.js';
 import { findUnset } from './unset.js';
 import { findUnused } from './unused.js';
 
@@ -16,6 +17,7 @@ import { findUnused } from './unused.js';
 export function findProblems(context: Omit<ProblemContext, 'diagnostics'>): readonly Diagnostic[] {
   const all: ProblemContext = { ...context, diagnostics: new Diagnostics() };
   findLoops(all);
+  findPulses(all);
   findFloating(all);
   findUnconnectedPorts(all);
   findClockProblems(all);

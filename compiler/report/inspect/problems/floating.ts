@@ -1,6 +1,8 @@
 import type { Circuit } from '../../../circuit/circuit.js';
 import { GateKind } from '../../../circuit/gates.js';
 import { NO_NET } from '../../../circuit/ids.js';
+import { memoryWrites } from '../../../circuit/memoryPorts.js';
+import { writePins } from '../../../circuit/memoryTable.js';
 import { counted } from '../netWords.js';
 import type { ProblemContext } from './context.js';
 
@@ -41,5 +43,6 @@ function openInputs(
       for (const column of pins) note(net, column[entry]!);
     });
   }
+  for (const { port } of memoryWrites(circuit)) for (const net of writePins(port)) note(net, net);
   return { count, readers };
 }

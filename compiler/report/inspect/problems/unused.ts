@@ -1,11 +1,12 @@
 import { readCounts } from '../../../circuit/analyses/readCounts.js';
 import { unusedParts } from '../../../circuit/analyses/unused.js';
-import { counted } from '../netWords.js';
+import { memorySpan } from '../memorySummary.js';
+import { counted, listText } from '../netWords.js';
 import type { ProblemContext } from './context.js';
 
 /** Gates, and state elements, that make no difference to any output. */
 export function findUnused({ design: { circuit }, words, diagnostics }: ProblemContext): void {
-  const { gates, state } = unusedParts(circuit);
+  const { gates, state, memories } = unusedParts(circuit);
   if (gates.length > 0) {
     const reads = readCounts(circuit);
     const ends = gates.filter((net) => reads[net] === 0);
@@ -20,5 +21,12 @@ export function findUnused({ design: { circuit }, words, diagnostics }: ProblemC
       `no output depends on ${counted(state.length, 'register or latch', 'registers and latches')}` +
       `, not even through others: ${words.list(state)}`;
     diagnostics.add('state-unused', message, words.span(state[0]!));
+  }
+  if (memories.length > 0 && circuit.outputs.length > 0) {
+    const names = memories.slice(0, 4).map((number) => circuit.memories[number]!.name);
+    const message =
+      `no output depends on ${counted(memories.length, 'memory', 'memories')}: ` +
+      listText(names, memories.length);
+    diagnostics.add('state-unused', message, memorySpan(circuit, memories[0]!));
   }
 }

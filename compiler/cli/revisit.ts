@@ -1,0 +1,161 @@
+import { dirname, resolve } from 'node:path';
+import { Command, Option } from 'commander';
+import { startEmitter } from '../emit/emitter.js';
+import { type EngineName, engineNames } from '../engines.js';
+import type { RunRecord } from '../record/runRecord.js';
+import { type Revisited, revisitDesign } from '../revisit/revisitDesign.js';
+import type { RunStart } from '../run/runRecorder.js';
+import { count, type RunSummary } from '../run/runSummary.js';
+import { writeWave } from '../waveform/writeWave.js';
+import { timedDesign } from './clockOption.js';
+import { loadCircuit } from './netlists.js';
+import { recordedRun, refuse, refuseChanges, warnOfDamage } from './resume.js';
+import { courseOf } from './run/periodOptions.js';
+import {
+  addWaveOptions,
+  addWindowOptions,
+  type ChosenWave,
+  type WaveOptions,
+  wavesWanted,
+  windowOf,
+} from './run/waveOptions.js';
+import { UsageError } from './usageError.js';
+
+interface RevisitOptions extends WaveOptions {
+  readonly from: number;
+  readonly to: number;
+  readonly engine?: EngineName;
+  readonly json?: true;
+}
+
+/** The verb `revisit`: shows any cycles of a recorded run with every net in sight. */
+export function revisitCommand(): Command {
+  const command = new Command('revisit')
+    .description('Runs some cycles of a recorded run again, with every net in sight.')
+    .argument('<dir>', 'the folder given to `run --record`');
+  addWaveOptions(addWindowOptions(command, true));
+  return command
+    .addOption(
+      new Option(
+        '--engine <name>',
+        'what runs the cycles; chosen by their number unless given',
+      ).choices(engineNames),
+    )
+    .option('--json', 'print what was done as JSON')
+    .addHelpText('after', HELP)
+    .action((dir: string, options: RevisitOptions) => revisit(dir, options));
+}
+
+const HELP = `
+The run goes again from the nearest checkpoint before the window. A run of which the
+period is known (--find-period) can be revisited at any later cycle. Values are those
+which nets have when the outputs are sampled, x included where the run had three values.
+
+Exit status: 0 the window is written, 1 it ends early at a cycle without result, 2 the
+record, an input or the request is wrong.
+
+Examples:
+  clockstride revisit lock.record --from 1_000_000 --to 1_000_040 --picture lock.svg
+  clockstride revisit soc.record --from 812_000 --to 812_999 --nets 'cpu.*' '**.fifo.count' \\
+    --waveform cpu.vcd --table cpu.csv`;
+
+async function revisit(dir: string, options: RevisitOptions): Promise<void> {
+  const window = windowOf(options);
+  if ((options.waveform ?? options.table ?? options.picture) === undefined) {
+    throw new UsageError('error: say where to: --waveform, --table or --picture FILE');
+  }
+  // Paths are meant where the command was given, not where the run was.
+  const here = pathsOf(options);
+  const { record, files, options: run } = await recordedRun(dir);
+  const result = await record.result().catch((error) => refuse(error, dir));
+  const shift = shiftOf(dir, window.from, result);
+  const emitter = startEmitter();
+  try {
+    const { circuit, files: netlists } = await loadCircuit(files, run);
+    const powerUp = run.powerUp ?? 'zero';
+    const design = timedDesign(circuit, run, { threeValued: powerUp === 'unknown' });
+    await refuseChanges(record, design, netlists, run);
+    const waves = wavesWanted(design, { ...options, ...here });
+    const start = await nearest(record, window.from - shift);
+    const course = await courseOf(design, run, { from: start.cycle });
+    const interrupt = new AbortController();
+    process.once('SIGINT', () => interrupt.abort());
+    const shown = { from: window.from - shift, to: window.to - shift };
+    const seen = await revisitDesign(design, {
+      ...{ start, ...shown, powerUp, seed: run.seed, interrupt: interrupt.signal, emitter },
+      engine: options.engine ?? 'wasm',
+      ...(course.cycles !== undefined && { cycles: course.cycles }),
+      stimulus: async (from) => (await courseOf(design, run, { from })).stimulus,
+      outlets: () => waves.map(({ path, form, list }) => writeWave(path, form, list, shown, shift)),
+    });
+    report(options, seen, { dir, start: start.cycle + shift, waves, circuit: circuit.name });
+  } finally {
+    await emitter.close();
+  }
+}
+
+function pathsOf({ waveform, table, picture }: WaveOptions): WaveOptions {
+  return {
+    ...(waveform !== undefined && { waveform: resolve(waveform) }),
+    ...(table !== undefined && { table: resolve(table) }),
+    ...(picture !== undefined && { picture: resolve(picture) }),
+  };
+}
+
+/** Cycles, whole periods, by which a window comes before itself, so that it lies in the run. */
+function shiftOf(dir: string, from: number, result: RunSummary | undefined): number {
+  if (result === undefined || from < result.cycles) return 0;
+  const { repetition, cycles } = result;
+  if (repetition === undefined) {
+    throw new UsageError(
+      `error: ${dir}: the run has ${count(cycles)} cycles, and its period is not known ` +
+        '(--find-period); --from must be less',
+    );
+  }
+  return Math.floor((from - repetition.leadIn) / repetition.period) * repetition.period;
+}
+
+async function nearest(record: RunRecord, cycle: number): Promise<RunStart> {
+  for await (const start of record.before(cycle, warnOfDamage(record.path))) return start;
+  throw new UsageError(`error: ${record.path} has no sound checkpoint before cycle ${cycle}`);
+}
+
+interface Told {
+  readonly dir: string;
+  readonly circuit: string;
+  /** The cycle of the checkpoint, as the window counts. */
+  readonly start: number;
+  readonly waves: readonly ChosenWave[];
+}
+
+function report(options: RevisitOptions, seen: Revisited, told: Told): void {
+  const { from } = options;
+  const { shown, engine, fault } = seen;
+  if (shown === 0) {
+    throw new UsageError(`error: ${told.dir}: the run ends before cycle ${count(from)}`);
+  }
+  if (fault !== undefined) process.exitCode = 1;
+  if (options.json) {
+    const waves = told.waves.map(({ path, list }) => ({ file: path, signals: list.count }));
+    const faults = fault && { fault: { cycle: from + shown, message: fault.message } };
+    const { start: checkpoint } = told;
+    const summary = { from, to: from + shown - 1, checkpoint, engine, waves, ...faults };
+    process.stdout.write(`${JSON.stringify(summary, null, 2)}\n`);
+    return;
+  }
+  const last = count(from + shown - 1);
+  const lines = told.waves.map(
+    ({ path, list }) => `${shownPath(path)}: ${count(list.count)} signals of ${told.circuit}`,
+  );
+  lines.push(
+    `cycles ${count(from)} to ${last}, from the checkpoint at cycle ${count(told.start)} ` +
+      `(engine ${engine})`,
+  );
+  if (fault !== undefined) {
+    lines.push(`cycle ${count(from + shown)} has no result: ${fault.message}`);
+  } else if (from + shown - 1 < options.to) lines.push('the run ends there');
+  process.stdout.write(`${lines.join('\n')}\n`);
+}
+
+const shownPath = (path: string): string =>
+  dirname(path) === resolve('.') ? path.slice(dirname(path).length + 1) : path;
