@@ -72,6 +72,13 @@ export class BusGates {
     return { kind: GateKind.Mux, fanin };
   }
 
+  /** `value` as long as `control` is known, and x where that is x. */
+  knownBy(control: Value, value: NetId): NetId {
+    const unsure = this.and(control, this.not(control));
+    if (this.isZero(unsure)) return value;
+    return this.net({ kind: GateKind.Xor, fanin: [value, this.net(unsure)] });
+  }
+
   /** The net of a value. */
   net(value: Value): NetId {
     if (typeof value === 'number') return value;

@@ -68,12 +68,21 @@ export interface PartTraits {
   readonly one?: Strength;
   /** Whether a switch reduces strengths (`rnmos` and its like). */
   readonly isResistive?: boolean;
+  /**
+   * Whether a driver or copy stands for a conditional operator with z in one branch: while `control`
+   * is x it drives x (IEEE 1364-2005, clause 5.1.13), where a `bufif1` may be z (clause 7.4).
+   */
+  readonly isConditional?: boolean;
 }
 
+const RESISTIVE = 1 << 12;
+const CONDITIONAL = 1 << 13;
+
 /** Traits as one number. */
-export function packTraits({ kind, zero, one, isResistive }: PartTraits): number {
+export function packTraits(traits: PartTraits): number {
+  const { kind, zero, one, isResistive, isConditional } = traits;
   const strengths = ((zero ?? Strength.Strong) << 4) | ((one ?? Strength.Strong) << 8);
-  return kind | strengths | (isResistive ? 1 << 12 : 0);
+  return kind | strengths | (isResistive ? RESISTIVE : 0) | (isConditional ? CONDITIONAL : 0);
 }
 
 /** The traits that `packTraits` has packed. */
@@ -81,7 +90,8 @@ export const unpackTraits = (packed: number): Required<PartTraits> => ({
   kind: packed & 15,
   zero: ((packed >> 4) & 15) as Strength,
   one: ((packed >> 8) & 15) as Strength,
-  isResistive: packed >> 12 === 1,
+  isResistive: (packed & RESISTIVE) !== 0,
+  isConditional: (packed & CONDITIONAL) !== 0,
 });
 
 /** Whether what drives with these traits is weaker than a gate, whatever its value: a pull. */

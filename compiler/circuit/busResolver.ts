@@ -99,9 +99,10 @@ export class BusResolver {
   }
 
   #contributionsOf(part: BusPart): Contribution[] {
-    const { data, zero, one } = part;
+    const { zero, one } = part;
     const gates = this.#gates;
     const control = part.control === NO_NET ? gates.one : part.control;
+    const data = part.isConditional ? gates.knownBy(control, part.data) : part.data;
     switch (part.kind) {
       case PartKind.Switch:
         return this.#shown(data).map(({ strength, driven }) => {
@@ -109,7 +110,7 @@ export class BusResolver {
           return driver(data, gates.and(control, driven), through);
         });
       case PartKind.Copy: {
-        const driven = gates.or(...this.#shown(data).map((shown) => shown.driven));
+        const driven = gates.or(...this.#shown(part.data).map((shown) => shown.driven));
         return [{ data, enable: gates.and(control, driven), zero, one }];
       }
       default:
