@@ -12,7 +12,7 @@ describe('clockstride', () => {
     expect(inject('buildProblem')).toBe('');
   });
 
-  it.each(['inspect', 'run', 'bench'])(
+  it.each(['inspect', 'run', 'settle', 'revisit', 'pack', 'bench'])(
     'explains %s with its exit status and an example',
     async (verb) => {
       const { status, stdout, stderr } = await folder.run(verb, '--help');
@@ -20,7 +20,7 @@ describe('clockstride', () => {
       expect(status).toBe(0);
       expect(stdout).toContain(`Usage: clockstride ${verb} `);
       expect(stdout).toMatch(/^Exit status: 0 /m);
-      expect(stdout).toMatch(new RegExp(`^Example:\n  clockstride ${verb} `, 'm'));
+      expect(stdout).toMatch(new RegExp(`^Examples?:\n  clockstride ${verb} `, 'm'));
     },
   );
 
