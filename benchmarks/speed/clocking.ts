@@ -3,14 +3,14 @@ import { cpus } from 'node:os';
 import { fileURLToPath } from 'node:url';
 import {
   type ClockTiming,
-  createEngine,
+  compile,
   Diagnostics,
   designOf,
   powerUpState,
   readNetlist,
   Source,
 } from '../../compiler/index.js';
-import { fillRandomRows, RandomBits } from '../../runtime/index.js';
+import { fillRandomRows, RandomBits, WasmEngine } from '../../runtime/index.js';
 
 /**
  * Measures what the ways of clocking cost: the same bank of registers behind one clock edge, and
@@ -85,7 +85,7 @@ const ways: readonly Way[] = [
 function textOf({ clocking, bank = PLAIN, ports = '' }: Way): string {
   return `module bank(input clk${ports}, input en, input [7:0] d, output [31:0] y);
     reg [255:0] r;
-    wire [255:0] next = ({r[254:0], r[255]} ^ {r[250:0], r[255:251]}) & ~{r[3:0], r[255:4]} ^ {32{d}};
+    wire [255:0] next = ({r[254:0], r[255]} ^ {r[250:0], r[255:251]}) & ~{r[3:0], r[255:4]} ^ {8{d, d[2:0], d[7:3], ~d, d ^ r[40:33]}};
     ${clocking}
     ${bank}
     assign y = r[31:0];
@@ -100,7 +100,7 @@ async function measure(way: Way, threeValued: boolean): Promise<number> {
     throw new Error(diagnostics.list.map(({ message }) => message).join('\n'));
   const { timings } = way;
   const design = designOf(circuit, { threeValued, ...(timings && { timings }) });
-  const engine = await createEngine(design, 'wasm');
+  const engine = await WasmEngine.create(await compile(design), undefined, { usesTable: false });
   engine.reset(powerUpState(circuit, threeValued ? 'unknown' : 'zero'));
   const { words } = design.layout.inputs;
   const stride = threeValued ? 2 * words : words;

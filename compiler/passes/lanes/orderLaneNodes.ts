@@ -4,26 +4,28 @@ import { orderSinks } from '../orderSinks.js';
 import { eachOperand, Users } from './users.js';
 
 /** Touches after which a value counts as gone from the registers and from what is kept. */
-const RECENT = 60;
-/** Sinks that are weighed against each other at a time, the ones found last. */
+const RECENT = 100;
+/** Goals that are weighed against each other at a time, the ones found last. */
 const CANDIDATES = 24;
-/** Users that are looked at to find the sinks that a value leads to. */
+/** Users that are looked at to find the goals that a value leads to. */
 const CLIMB = 60;
 /** Values with more users than this lead everywhere, and so nowhere. */
 const MOST_USERS = 200;
-/** Most operations that a sink may still need for being taken out of turn. */
-const LARGEST = 16;
+/** Most operations that a goal may still need for being taken out of turn. */
+const LARGEST = 24;
 /** What one more operation counts for, where a value to be fetched counts 1. */
 const OPERATION = 0.2;
+/** What a goal that is no sink counts for: it must be kept until it is read. */
+const KEPT = 3;
 
 /**
  * Lists the operation nodes of a logic graph in the order to compute them for lanes, where every
  * value takes a vector register, and fetching one costs more than what is done with it.
  *
- * Next comes the small sink near by (one that reads what has just been touched) that finds most of
- * what it reads at hand, else the next one of `orderSinks`. Within a sink's cone the operand that
- * needs more registers comes first (R. Sethi, J. D. Ullman, "The generation of optimal code for
- * arithmetic expressions", JACM 17(4), 1970).
+ * Goals are the sinks, and what is read several times. Next comes the small goal near by (one that
+ * reads what has just been touched) that finds most of what it reads at hand, else the next one of
+ * `orderSinks`. Within a goal's cone the operand that needs more registers comes first (R. Sethi,
+ * J. D. Ullman, "The generation of optimal code for arithmetic expressions", JACM 17(4), 1970).
  */
 export function orderLaneNodes(logic: Logic): Uint32Array {
   const ordering = new Ordering(logic);
@@ -40,12 +42,13 @@ class Ordering {
   readonly #logic: Logic;
   readonly #users: Users;
   readonly #needs: Float64Array;
-  readonly #isSink: Uint8Array;
+  /** Per node what it counts for as a goal, negative if it is none. */
+  readonly #goal: Int8Array;
   readonly #isDone: Uint8Array;
   /** Per node, when it was last made or read. */
   readonly #touchedAt: Float64Array;
   #touches = 0;
-  /** Values touched for the sink that is taken, each once. */
+  /** Values touched for the goal that is taken, each once. */
   readonly #touched: number[] = [];
   readonly #touchedFor: Uint32Array;
   #takes = 0;
@@ -61,29 +64,31 @@ class Ordering {
     this.#logic = logic;
     this.#users = new Users(logic);
     this.#needs = registerNeeds(logic);
-    this.#isSink = new Uint8Array(nodeCount);
+    this.#goal = Int8Array.from({ length: nodeCount }, (_, node) =>
+      this.#users.start[node + 1]! - this.#users.start[node]! > 1 ? KEPT : -1,
+    );
     this.#isDone = new Uint8Array(nodeCount);
     this.#touchedAt = new Float64Array(nodeCount).fill(Number.NEGATIVE_INFINITY);
     this.#isCandidate = new Uint8Array(nodeCount);
     this.#visit = new Uint32Array(nodeCount);
     this.#touchedFor = new Uint32Array(nodeCount);
-    for (const sink of sinksOf(logic)) this.#isSink[sink >>> 1] = 1;
+    for (const sink of sinksOf(logic)) this.#goal[sink >>> 1] = 0;
     // What is no operation is there from the start.
     for (let node = 0; node < nodeCount; node++) {
       if (logic.op[node]! < LogicOp.And) this.#isDone[node] = 1;
     }
   }
 
-  /** Takes sinks near by as long as there are any. */
+  /** Takes goals near by as long as there are any. */
   takeNear(): void {
-    for (let sink = this.#best(); sink >= 0; sink = this.#best()) this.take(sink);
+    for (let goal = this.#best(); goal >= 0; goal = this.#best()) this.take(goal);
   }
 
-  /** Computes what a sink still needs, and looks around for sinks that read the same. */
-  take(sink: number): void {
-    if (this.#isDone[sink] === 1) return;
+  /** Computes what a goal still needs, and looks around for goals that read the same. */
+  take(goal: number): void {
+    if (this.#isDone[goal] === 1) return;
     this.#takes++;
-    const stack = [sink];
+    const stack = [goal];
     while (stack.length > 0) {
       const node = stack[stack.length - 1]!;
       const depth = stack.length;
@@ -118,13 +123,13 @@ class Ordering {
   }
 
   #touch(node: number): void {
-    // Looked around from once for each sink.
+    // Looked around from once for each goal.
     if (this.#touchedFor[node] !== this.#takes) this.#touched.push(node);
     this.#touchedFor[node] = this.#takes;
     this.#touchedAt[node] = ++this.#touches;
   }
 
-  // Climbs from a value to the sinks that it leads to.
+  // Climbs from a value to the goals that it leads to.
   #findCandidates(from: number): void {
     const stack = [from];
     let left = CLIMB;
@@ -136,7 +141,7 @@ class Ordering {
         const user = this.#users.user[i]!;
         if (this.#isDone[user] === 1) continue;
         stack.push(user);
-        if (this.#isSink[user] === 0 || this.#isCandidate[user] === 1) continue;
+        if (this.#goal[user]! < 0 || this.#isCandidate[user] === 1) continue;
         this.#isCandidate[user] = 1;
         this.#candidates.push(user);
       }
@@ -147,25 +152,25 @@ class Ordering {
     this.#pruneCandidates();
     let best = -1;
     let least = Number.POSITIVE_INFINITY;
-    for (const sink of this.#candidates) {
-      const cost = this.#cost(sink);
-      if (cost < least) [best, least] = [sink, cost];
+    for (const goal of this.#candidates) {
+      const cost = this.#cost(goal) + this.#goal[goal]!;
+      if (cost < least) [best, least] = [goal, cost];
     }
     return best;
   }
 
   #pruneCandidates(): void {
-    const open = this.#candidates.filter((sink) => this.#isDone[sink] === 0);
+    const open = this.#candidates.filter((goal) => this.#isDone[goal] === 0);
     const dropped = open.splice(0, Math.max(0, open.length - CANDIDATES));
-    for (const sink of dropped) this.#isCandidate[sink] = 0;
+    for (const goal of dropped) this.#isCandidate[goal] = 0;
     this.#candidates = open;
   }
 
-  // What it takes to compute a sink now: less for what is at hand, infinite beyond `LARGEST`.
-  #cost(sink: number): number {
+  // What it takes to compute a goal now: less for what is at hand, infinite beyond `LARGEST`.
+  #cost(goal: number): number {
     const visit = ++this.#visits;
     const stack = this.#stack;
-    stack[0] = sink;
+    stack[0] = goal;
     let [size, cost, operations] = [1, 0, 0];
     const { op, a, b, c } = this.#logic;
     while (size > 0) {

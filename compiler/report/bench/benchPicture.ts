@@ -57,7 +57,7 @@ ${legend(shown)}
 ${gridLines(scale, base)}
 ${shown.map((result, i) => rowText(result, TOP + (i + 0.5) * ROW, scale)).join('\n')}
 ${label('quiet', (LEFT + WIDTH - RIGHT) / 2, base + 42, 'middle', 'times as fast (logarithmic scale)')}
-${label('quiet', LEFT, base + 74, 'start', `Medians on ${machine.cores} cores of ${machine.processor}, Node ${machine.node}; responses equal in all engines.`)}
+${label('quiet', LEFT, base + 74, 'start', `Best bursts on ${machine.cores} cores of ${machine.processor}, Node ${machine.node}; responses equal in all engines.`)}
 </svg>
 `;
 }

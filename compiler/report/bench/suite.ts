@@ -42,14 +42,17 @@ export function benchSuite(machine: Machine, circuits: readonly BenchResult[]): 
 export const usedBy = ({ engines }: BenchResult): BenchEngine =>
   engines.table === undefined ? 'wasm' : 'table';
 
-/** How many times as fast as engine `slow` engine `fast` is; undefined unless both were measured. */
+/**
+ * How many times as fast as engine `slow` engine `fast` is, in the best bursts of both, which other
+ * programs disturb least; undefined unless both were measured.
+ */
 export function speedOver(
   { engines }: BenchResult,
   slow: BenchEngine,
   fast: BenchEngine,
 ): number | undefined {
   const [of, than] = [engines[slow], engines[fast]];
-  return of && than && of.nsPerCycle / than.nsPerCycle;
+  return of && than && of.best / than.best;
 }
 
 function meanOf(
