@@ -1,35 +1,15 @@
 import type { Fault } from './engine.js';
 import { laneStrides } from './laneLayout.js';
 import type { LaneModel } from './laneModel.js';
+import { type LaneExports, type LanePlace, placesOf } from './lanePlaces.js';
 import { type ModelLayout, rowStride } from './layout.js';
 import { loadStates, showStates } from './stateBits.js';
-
-/** Bytes that rows of one call of the module may take, so that they stay cached. */
-const BUFFER_BYTES = 1 << 17;
-
-/** Cycles in one call of the module, see `WasmEngine`. */
-const CALL_CYCLES = 1024;
 
 /** A lane that ended because a cycle has no result, as `RunFault` ends the run of an engine. */
 export interface LaneFault extends Fault {
   readonly lane: number;
   /** The cycle without result, from 0 at the reset. */
   readonly cycle: number;
-}
-
-interface LaneExports {
-  readonly memory: WebAssembly.Memory;
-  run(
-    cycles: number,
-    stimulus: number,
-    stimulusStride: number,
-    response: number,
-    responseStride: number,
-    current: number,
-    next: number,
-    position: number,
-  ): number;
-  spread(from: number, to: number, rows: number): void;
 }
 
 /**
@@ -47,14 +27,14 @@ export class LaneEngine {
   readonly faults: readonly LaneFault[];
   readonly #faults: LaneFault[] = [];
   readonly #model: LaneModel;
-  readonly #place: Place;
+  readonly #place: LanePlace;
   #cycles = 0;
   /** Whether the state is in the second area. */
   #isSwapped = false;
   /** Per 32 lanes, a 1 for each that goes on. */
   readonly #running: Uint32Array;
 
-  private constructor(model: LaneModel, place: Place) {
+  private constructor(model: LaneModel, place: LanePlace) {
     this.layout = model.layout;
     this.lanes = model.lanes;
     this.faults = this.#faults;
@@ -339,44 +319,4 @@ export class LaneEngine {
   #numbers(address: number, count: number): Uint32Array {
     return new Uint32Array(this.#place.exports.memory.buffer, address, count);
   }
-}
-
-/** Where one engine's states stand, and what it shares with others. */
-interface Place {
-  readonly exports: LaneExports;
-  readonly areas: readonly [number, number];
-  readonly buffers: Buffers;
-}
-
-/** Addresses of the rows of one call. */
-interface Buffers {
-  readonly stimulus: number;
-  readonly response: number;
-  /** Packed stimulus rows. */
-  readonly packed: number;
-  /** Rows that there is room for. */
-  readonly rows: number;
-}
-
-const roundUp = (value: number): number => Math.ceil(value / 64) * 64;
-
-function placesOf(model: LaneModel, exports: LaneExports, count: number): Place[] {
-  const { layout, lanes, memory, states } = model;
-  const strides = laneStrides(layout, lanes);
-  const [input, output] = [strides.input * 4, strides.output * 4];
-  const packedRow = rowStride(layout.inputs, layout.threeValued) * 4;
-  const fitting = Math.floor(BUFFER_BYTES / Math.max(1, input + output));
-  const rows = Math.max(1, Math.min(CALL_CYCLES, fitting));
-  const stimulus = memory.free;
-  const response = stimulus + roundUp(rows * input);
-  const packed = response + roundUp(rows * output);
-  const buffers = { stimulus, response, packed, rows };
-  const area = roundUp(states.length * (lanes >>> 3));
-  const first = packed + roundUp(rows * packedRow);
-  const missing = first + 2 * count * area - exports.memory.buffer.byteLength;
-  if (missing > 0) exports.memory.grow(Math.ceil(missing / 65536));
-  return Array.from({ length: count }, (_, i): Place => {
-    const at = first + 2 * i * area;
-    return { exports, areas: [at, at + area], buffers };
-  });
 }

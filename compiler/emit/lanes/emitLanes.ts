@@ -11,9 +11,9 @@ import {
 import { ANCHOR_SLOT, anchored } from './anchored.js';
 import { addLaneLoop, type LaneCycle } from './laneLoop.js';
 import { laneStores } from './laneStores.js';
-import { type Planning, planBlock, planCopies } from './planBlock.js';
+import { type BlockPlan, type Planning, planBlock, planCopies } from './planBlock.js';
 import { addSpread } from './spreadRows.js';
-import { wordOf } from './word.js';
+import { type Word, wordOf } from './word.js';
 import { type LaneModuleParts, writeBlock } from './writeBlock.js';
 
 /** Address of the words that blocks pass on; what lies below stays zero. */
@@ -93,23 +93,30 @@ function planningOf(
   };
 }
 
-function addBlocks(parts: LaneModuleParts, planning: Planning, cycle: string): string[] {
+// The cycle of a small circuit stands in the loop, those of others in functions.
+function addBlocks(parts: LaneModuleParts, planning: Planning, cycle: string): LaneCycle['blocks'] {
+  const plans = plansOf(planning, parts.word);
+  const { program, stores } = planning;
+  if (program.op.length <= BLOCK && stores.rest.length <= COPIES) return [...plans];
   const names: string[] = [];
-  const { registers, kept } = parts.word;
+  // One plan at a time: together they would take many times the room of the program.
+  for (const plan of plans) {
+    names.push(`${cycle}_block${names.length}`);
+    writeBlock(parts, names.at(-1)!, plan);
+  }
+  return names;
+}
+
+function* plansOf(planning: Planning, { registers, kept }: Word): Generator<BlockPlan> {
   const count = planning.program.op.length;
   for (let start = 0; start < count; start += BLOCK) {
-    const name = `${cycle}_block${names.length}`;
     const plan = planBlock(planning, start, Math.min(count, start + BLOCK), kept);
-    writeBlock(parts, name, anchored(plan, registers));
-    names.push(name);
+    yield anchored(plan, registers);
   }
   const { rest } = planning.stores;
   for (let from = 0; from < rest.length; from += COPIES) {
-    const name = `${cycle}_copies${names.length}`;
-    writeBlock(parts, name, planCopies(planning, rest.slice(from, from + COPIES)));
-    names.push(name);
+    yield planCopies(planning, rest.slice(from, from + COPIES));
   }
-  return names;
 }
 
 // Operations whose result is read in a later block get a scratch word, from `firstWire` on.

@@ -1,5 +1,6 @@
 import type binaryen from 'binaryen';
-import type { LaneModuleParts } from './writeBlock.js';
+import type { BlockPlan } from './planBlock.js';
+import { blockCode, type LaneModuleParts } from './writeBlock.js';
 
 /** Locals of the exported `run`, parameters first. */
 const Run = {
@@ -13,15 +14,20 @@ const Run = {
   Position: 7,
   Left: 8,
   Swap: 9,
+  Scratch: 10,
+  /** First number free for code that stands in the loop. */
+  Free: 11,
 } as const;
 
 const PARAMETERS = Run.Left;
-const LOCALS = 2;
+
+/** Where code that stands in the loop finds the address of each `Region`. */
+const REGION_LOCALS = [Run.Current, Run.Next, Run.Row, Run.Response, Run.Scratch];
 
 /** The code of one kind of cycle. */
 export interface LaneCycle {
-  /** Names of its functions, in order. */
-  readonly blocks: readonly string[];
+  /** Names of its functions, in order; or plans of code that stands in the loop and costs no call. */
+  readonly blocks: readonly string[] | readonly BlockPlan[];
   /** Addresses of the words of lanes that have no result. */
   readonly faults: readonly number[];
 }
@@ -52,8 +58,9 @@ export function addLaneLoop(
   const advance = (number: number, by: binaryen.ExpressionRef) =>
     local.set(number, i32.add(get(number), by));
   const done = () => module.return(i32.sub(get(Run.Cycles), get(Run.Left)));
+  const own: binaryen.Type[] = new Array<binaryen.Type>(Run.Free - PARAMETERS).fill(wasm.i32);
   const coded = cycles.map((cycle) => [
-    ...calls(parts, place, cycle),
+    ...cycle.blocks.flatMap((block) => blockStatements(parts, block, own)),
     // Done is done: a lane without result costs the others nothing.
     local.set(Run.Swap, get(Run.Current)),
     local.set(Run.Current, get(Run.Next)),
@@ -69,27 +76,30 @@ export function addLaneLoop(
   ]);
   const code = module.block(null, [
     local.set(Run.Left, get(Run.Cycles)),
+    local.set(Run.Scratch, i32.const(place.scratch)),
     module.if(get(Run.Left), module.loop('cycle', body)),
     done(),
   ]);
   const parameters = wasm.createType(new Array<binaryen.Type>(PARAMETERS).fill(wasm.i32));
-  const locals = new Array<binaryen.Type>(LOCALS).fill(wasm.i32);
-  module.addFunction('run', parameters, wasm.i32, locals, code);
+  module.addFunction('run', parameters, wasm.i32, own, code);
   module.addFunctionExport('run', 'run');
 }
 
-function calls(
-  { wasm, module }: LaneModuleParts,
-  { scratch }: LoopPlace,
-  { blocks }: LaneCycle,
+// A call, or the code itself, whose locals are added to `own`.
+function blockStatements(
+  parts: LaneModuleParts,
+  block: string | BlockPlan,
+  own: binaryen.Type[],
 ): binaryen.ExpressionRef[] {
-  const { i32, local } = module;
-  return blocks.map((name) => {
-    const pointers = [Run.Current, Run.Next, Run.Row, Run.Response].map((number) =>
-      local.get(number, wasm.i32),
-    );
-    return module.call(name, [...pointers, i32.const(scratch)], wasm.none);
-  });
+  const { wasm, module } = parts;
+  if (typeof block === 'string') {
+    const pointers = REGION_LOCALS.map((number) => module.local.get(number, wasm.i32));
+    return [module.call(block, pointers, wasm.none)];
+  }
+  const place = { regions: REGION_LOCALS, free: PARAMETERS + own.length };
+  const { body, locals } = blockCode(parts, block, place);
+  own.push(...locals);
+  return body;
 }
 
 function faulty(

@@ -4,6 +4,7 @@ import type { Circuit } from '../../../compiler/circuit/circuit.js';
 import { findClockPorts } from '../../../compiler/circuit/clockPorts.js';
 import { type CompileOptions, designOf } from '../../../compiler/compile.js';
 import { compileLanes, laneProgramsOf } from '../../../compiler/compileLanes.js';
+import { Source } from '../../../compiler/diagnostics/source.js';
 import { loadBinaryen } from '../../../compiler/emit/emitModel.js';
 import { localEmitter, startEmitter } from '../../../compiler/emit/emitter.js';
 import { emitLanes } from '../../../compiler/emit/lanes/emitLanes.js';
@@ -125,6 +126,18 @@ describe('emitLanes', () => {
     );
     await started.close();
     expect(there!.bytes).toEqual(here!.bytes);
+  });
+
+  it('refuses memories by name', () => {
+    const text = `module buffer(input clk, we, input [9:0] at, input [7:0] d, output [7:0] q);
+      reg [7:0] words [0:1023];
+      assign q = words[at];
+      always @(posedge clk) if (we) words[at] <= d;
+    endmodule`;
+    const buffer = designFrom(new Source('buffer.v', text));
+    expect(() => compileLanes(buffer, 128)).toThrow(
+      new RangeError('lanes cannot run memories, and the circuit has 1: words'),
+    );
   });
 
   it('refuses other numbers of lanes', () => {
