@@ -6,7 +6,7 @@ export class GrowableUint32 {
   #length = 0;
 
   constructor(capacity = 64) {
-    this.#data = new Uint32Array(capacity);
+    this.#data = new Uint32Array(Math.max(capacity, 1));
   }
 
   get length(): number {
@@ -24,6 +24,13 @@ export class GrowableUint32 {
 
   set(index: number, value: number): void {
     this.#data[index] = value;
+  }
+
+  /** Makes room for so many entries at once, which saves copying where they are known to come. */
+  reserve(capacity: number): void {
+    const { length } = this.#data;
+    // Never by little: it may be called for one batch after another.
+    if (capacity > length) this.#resize(Math.max(capacity, Math.ceil(1.25 * length)));
   }
 
   /** Appends `count` entries of one value. */
@@ -56,8 +63,12 @@ export class GrowableUint32 {
   }
 
   #grow(needed: number): void {
-    const larger = new Uint32Array(Math.max(needed, this.#data.length * 2));
-    larger.set(this.#data);
+    this.#resize(Math.max(needed, this.#data.length * 2));
+  }
+
+  #resize(capacity: number): void {
+    const larger = new Uint32Array(capacity);
+    larger.set(this.#data.subarray(0, this.#length));
     this.#data = larger;
   }
 }
@@ -68,7 +79,7 @@ export class GrowableUint8 {
   #length = 0;
 
   constructor(capacity = 64) {
-    this.#data = new Uint8Array(capacity);
+    this.#data = new Uint8Array(Math.max(capacity, 1));
   }
 
   get length(): number {
@@ -76,12 +87,17 @@ export class GrowableUint8 {
   }
 
   push(value: number): void {
-    if (this.#length === this.#data.length) {
-      const larger = new Uint8Array(this.#data.length * 2);
-      larger.set(this.#data);
-      this.#data = larger;
-    }
+    if (this.#length === this.#data.length) this.reserve(this.#data.length * 2);
     this.#data[this.#length++] = value;
+  }
+
+  /** As for `GrowableUint32`. */
+  reserve(capacity: number): void {
+    const { length } = this.#data;
+    if (capacity <= length) return;
+    const larger = new Uint8Array(Math.max(capacity, Math.ceil(1.25 * length)));
+    larger.set(this.#data);
+    this.#data = larger;
   }
 
   get(index: number): number {

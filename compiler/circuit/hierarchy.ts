@@ -68,6 +68,10 @@ class ScopeNames implements LazyList<string> {
     return this.#ids.length;
   }
 
+  reserve(names: number): void {
+    this.#ids.reserve(names);
+  }
+
   /** Adds a name, as a text or by its number in the source; returns its index. */
   push(name: string | number): number {
     const index = this.#ids.length;
@@ -99,6 +103,13 @@ export class HierarchyBuilder {
   /** `source` has the names of the scopes that are given one by number. */
   constructor(source?: NameSource) {
     this.#names = new ScopeNames(source);
+  }
+
+  /** Makes room for so many scopes with so many bits of signals in all. */
+  reserve(scopes: number, bits: number): void {
+    this.#names.reserve(scopes);
+    for (const column of [this.#parent, this.#module, this.#start]) column.reserve(scopes);
+    this.#netOf.reserve(bits);
   }
 
   /** Registers the names of a module; returns its index. */

@@ -45,6 +45,10 @@ export const ConnectionKind = {
   Expression: 3,
 } as const;
 
+// From so many connections on the table looks how many more may come, at most that many times more.
+const LARGE = 1 << 16;
+const MOST_SCALE = 64;
+
 /** Value of `connectionPort` for a positional connection. */
 export const POSITIONAL = 0xffffffff;
 
@@ -74,6 +78,15 @@ export class InstanceTable {
   readonly #connectionPosition = new GrowableUint32();
   readonly #extras = new Map<number, InstanceExtras>();
   readonly expressions: Expression[] = [];
+  readonly #fractionRead: () => number;
+  /** What had been read before the first instance. */
+  #fractionBefore = 0;
+  #reserved = LARGE;
+
+  /** `fractionRead` tells how much of the text has been read, of which a large table takes note. */
+  constructor(fractionRead: () => number = () => 0) {
+    this.#fractionRead = fractionRead;
+  }
 
   get count(): number {
     return this.#module.length;
@@ -84,6 +97,8 @@ export class InstanceTable {
    * primitive, or `-1 - g` for `builtinGates[g]`. `name` is 0 where the instance has none.
    */
   begin(module: number, name: NameId, position: Position, extras?: InstanceExtras): number {
+    if (this.#module.length === 0) this.#fractionBefore = this.#fractionRead();
+    if (this.#kind.length >= this.#reserved) this.#reserve();
     if (extras !== undefined) this.#extras.set(this.#module.length, extras);
     this.#module.push(module >>> 0);
     this.#name.push(name);
@@ -99,6 +114,23 @@ export class InstanceTable {
     this.#first.push(first);
     this.#second.push(second);
     this.#connectionPosition.push(position);
+  }
+
+  // With what has been read as a measure of what comes, a large table need not grow step by step.
+  #reserve(): void {
+    const read = (this.#fractionRead() - this.#fractionBefore) / (1 - this.#fractionBefore);
+    const scale = Math.min(MOST_SCALE, 1.05 / Math.max(read, 0.01));
+    const instances = Math.ceil(this.#module.length * scale);
+    const connections = Math.ceil(this.#kind.length * scale);
+    for (const column of [this.#module, this.#name, this.#position, this.#connections]) {
+      column.reserve(instances);
+    }
+    for (const column of [this.#port, this.#first, this.#second, this.#connectionPosition]) {
+      column.reserve(connections);
+    }
+    this.#kind.reserve(connections);
+    // Before the last of them is there, and with it the need for more.
+    this.#reserved = Math.max(0.9 * connections, 2 * this.#reserved);
   }
 
   /** NameId of the module or primitive, or `-1 - g` for a built-in gate. */

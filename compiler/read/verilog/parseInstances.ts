@@ -15,22 +15,36 @@ import type { Parser } from './parser.js';
 import type { Expression, Item, NameExpression, Strength } from './syntax.js';
 import { Token } from './tokens.js';
 
+// What a module imports is looked up anew at each use; these constants are not.
+const {
+  Comma,
+  Dot,
+  Hash,
+  Identifier,
+  LeftBracket,
+  LeftParen,
+  Number: Num,
+  RightBracket,
+  RightParen,
+  Semicolon,
+} = Token;
+
 /** name [ strength ] [ parameters ] instance { `,` instance } `;` (annex A.4.1 and A.5.4) */
 export function parseModuleInstances(p: Parser, items: Item[]): void {
   const { tokens } = p;
   const { start, value: module } = tokens;
   p.beginItem(module);
   tokens.next();
-  if (tokens.kind === Token.LeftParen) {
+  if (tokens.kind === LeftParen) {
     tokens.next();
     if (!isStrength(p)) {
       parseInstancesFrom(p, items, module, start, undefined);
       return;
     }
     const strength = parseStrengthFrom(p);
-    const parameters = p.is(Token.Hash) ? parseParameterValues(p) : [];
+    const parameters = p.is(Hash) ? parseParameterValues(p) : [];
     parseInstances(p, items, module, start, { range: undefined, parameters, strength });
-  } else if (tokens.kind === Token.Hash) {
+  } else if (tokens.kind === Hash) {
     const parameters = parseParameterValues(p);
     parseInstances(p, items, module, start, { range: undefined, parameters, strength: undefined });
   } else {
@@ -45,7 +59,7 @@ export function parseGateInstances(p: Parser, items: Item[]): void {
   const module = -1 - (tokens.kind - FIRST_GATE);
   tokens.next();
   let strength: Strength | undefined;
-  if (tokens.kind === Token.LeftParen) {
+  if (tokens.kind === LeftParen) {
     tokens.next();
     if (!isStrength(p)) {
       parseInstancesFrom(p, items, module, start, undefined);
@@ -70,19 +84,19 @@ function parseInstances(
   for (;;) {
     let name: NameId = 0;
     let ownExtras = extras;
-    if (tokens.kind === Token.Identifier) {
+    if (tokens.kind === Identifier) {
       name = tokens.value;
       tokens.next();
-      if (tokens.kind === Token.LeftBracket) ownExtras = withRange(p, extras);
+      if (tokens.kind === LeftBracket) ownExtras = withRange(p, extras);
     }
-    if (tokens.kind !== Token.LeftParen) p.fail(afterInstanceName(name));
+    if (tokens.kind !== LeftParen) p.fail(afterInstanceName(name));
     tokens.next();
     parseOneInstance(p, items, module, name, position, ownExtras);
-    if (tokens.kind !== Token.Comma) break;
+    if (tokens.kind !== Comma) break;
     tokens.next();
     position = tokens.start;
   }
-  p.expect(Token.Semicolon);
+  p.expect(Semicolon);
 }
 
 /** An instance without a name, whose `(` has been read, and what follows it. */
@@ -94,8 +108,8 @@ function parseInstancesFrom(
   extras: InstanceExtras | undefined,
 ): void {
   parseOneInstance(p, items, module, 0, start, extras);
-  if (p.accept(Token.Comma)) parseInstances(p, items, module, p.tokens.start, extras);
-  else p.expect(Token.Semicolon);
+  if (p.accept(Comma)) parseInstances(p, items, module, p.tokens.start, extras);
+  else p.expect(Semicolon);
 }
 
 function parseOneInstance(
@@ -125,19 +139,19 @@ function afterInstanceName(name: NameId): string {
 /** connections `)`: all named or all by position */
 function parseConnections(p: Parser): void {
   const { tokens } = p;
-  if (tokens.kind === Token.RightParen) {
+  if (tokens.kind === RightParen) {
     tokens.next();
     return;
   }
   for (;;) {
-    if (tokens.kind === Token.Dot) parseNamedConnection(p);
-    else if (tokens.kind === Token.Comma || tokens.kind === Token.RightParen) {
+    if (tokens.kind === Dot) parseNamedConnection(p);
+    else if (tokens.kind === Comma || tokens.kind === RightParen) {
       p.instances.connect(POSITIONAL, ConnectionKind.Empty, 0, 0, tokens.start);
     } else parseConnection(p, POSITIONAL);
-    if (tokens.kind !== Token.Comma) break;
+    if (tokens.kind !== Comma) break;
     tokens.next();
   }
-  p.expect(Token.RightParen, "',' or ')'");
+  p.expect(RightParen, "',' or ')'");
 }
 
 /** `.` port `(` [ expression ] `)` */
@@ -145,15 +159,15 @@ function parseNamedConnection(p: Parser): void {
   const { tokens } = p;
   const { start } = tokens;
   tokens.next();
-  if (tokens.kind !== Token.Identifier) p.fail("the name of a port after '.'");
+  if (tokens.kind !== Identifier) p.fail("the name of a port after '.'");
   const port = tokens.value;
   tokens.next();
-  if (tokens.kind !== Token.LeftParen) p.fail("'(' and the connection of the port");
+  if (tokens.kind !== LeftParen) p.fail("'(' and the connection of the port");
   tokens.next();
-  if (tokens.kind === Token.RightParen) {
+  if (tokens.kind === RightParen) {
     p.instances.connect(port, ConnectionKind.Empty, 0, 0, start);
   } else parseConnection(p, port);
-  if (tokens.kind !== Token.RightParen) p.fail("')'");
+  if (tokens.kind !== RightParen) p.fail("')'");
   tokens.next();
 }
 
@@ -161,19 +175,19 @@ function parseNamedConnection(p: Parser): void {
 function parseConnection(p: Parser, port: number): void {
   const { tokens, instances } = p;
   const { start } = tokens;
-  if (tokens.kind !== Token.Identifier) {
+  if (tokens.kind !== Identifier) {
     connectExpression(p, port, parseExpression(p), start);
     return;
   }
   const { value: name, end } = tokens;
   tokens.next();
   const { kind } = tokens;
-  if (kind === Token.RightParen || kind === Token.Comma) {
+  if (kind === RightParen || kind === Comma) {
     instances.connect(port, ConnectionKind.Name, name, 0, start);
     return;
   }
   const signal: NameExpression = { kind: 'name', path: [name], start, end };
-  if (kind !== Token.LeftBracket) {
+  if (kind !== LeftBracket) {
     connectExpression(p, port, parseRest(p, parseNameFrom(p, signal)), start);
     return;
   }
@@ -186,13 +200,13 @@ function parseBit(p: Parser, port: number, signal: NameExpression): void {
   const { start } = signal;
   tokens.next();
   let index: Expression;
-  if (tokens.kind === Token.Number && tokens.value >= 0) {
+  if (tokens.kind === Num && tokens.value >= 0) {
     const { value, start: indexStart, end: indexEnd } = tokens;
     tokens.next();
-    if (tokens.kind === Token.RightBracket) {
+    if (tokens.kind === RightBracket) {
       tokens.next();
       const { kind, lastEnd } = tokens;
-      if (kind === Token.RightParen || kind === Token.Comma) {
+      if (kind === RightParen || kind === Comma) {
         p.instances.connect(port, ConnectionKind.Bit, signal.path[0]!, value, start);
         return;
       }

@@ -18,7 +18,7 @@ export function parseModule(p: Parser): ModuleSyntax | undefined {
   const items: Item[] = [];
   let ports: HeaderPort[] = [];
   let name = 0;
-  p.instances = new InstanceTable();
+  p.instances = new InstanceTable(() => tokens.at / tokens.text.length);
   p.beginItem(0);
   p.attempt(() => {
     name = p.expectName('the name of the module');

@@ -35,6 +35,19 @@ export class PlainNames implements Iterable<DeclaredName> {
     this.pushPlain(declared.name, declared.start, declared.end);
   }
 
+  /** Calls `plain` for each name alone and `other` for each that has more, in their order. */
+  forEach(
+    plain: (name: NameId, start: Position, end: Position) => void,
+    other: (declared: DeclaredName) => void,
+  ): void {
+    const columns = this.#columns;
+    for (let i = 0; i < columns.length; i += STRIDE) {
+      const more = this.#others.size > 0 ? this.#others.get(i / STRIDE) : undefined;
+      if (more !== undefined) other(more);
+      else plain(columns.get(i), columns.get(i + 1), columns.get(i + 2));
+    }
+  }
+
   *[Symbol.iterator](): Iterator<DeclaredName> {
     const columns = this.#columns;
     for (let i = 0; i < columns.length; i += STRIDE) {

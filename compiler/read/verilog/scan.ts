@@ -16,6 +16,19 @@ import {
 } from './textEnds.js';
 import { Token } from './tokens.js';
 
+// What a module imports is looked up anew at each use, and these are used for every token.
+const SPACE = Char.Space;
+const BLANK = CharClass.Space;
+const SLASH = Char.Slash;
+const LEFT_PAREN = Char.LeftParen;
+const STAR = Char.Star;
+const IDENTIFIER = Token.Identifier;
+const FIRST_WORD = Token.FirstKeyword - 1;
+const singles = singleTokens;
+const classes = charClass;
+const step = hashStep;
+const LETTER = CharClass.Letter;
+
 /** Who gives the scanner its texts and hears of problems. */
 export interface ScannerClient {
   /** Called at a backtick: reads a directive or macro use, and moves the scanner past it. */
@@ -88,15 +101,15 @@ export class Scanner {
     let at = this.at;
     if (at + 2 >= text.length || this.fixedStart >= 0) return false;
     let first = text[at]!;
-    if (first === Char.Space) first = text[++at]!;
-    const single = singleTokens[first]!;
+    if (first === SPACE) first = text[++at]!;
+    const single = singles[first]!;
     if (single !== 0) {
       // A comment or an attribute may begin here.
-      if (first === Char.Slash) return false;
-      if (first === Char.LeftParen && text[at + 1] === Char.Star) return false;
+      if (first === SLASH) return false;
+      if (first === LEFT_PAREN && text[at + 1] === STAR) return false;
       this.kind = single;
       this.at = at + 1;
-    } else if (charClass[first] === CharClass.Letter) this.#identifier(at);
+    } else if (classes[first] === LETTER) this.#identifier(at);
     else return false;
     this.start = this.base + at;
     this.end = this.base + this.at;
@@ -251,10 +264,7 @@ export class Scanner {
     this.at = at;
     const id = this.#names.internHashed(text, start, at, hash);
     this.value = id;
-    this.kind =
-      id < this.reserved.length && this.reserved[id] === 1
-        ? Token.FirstKeyword - 1 + id
-        : Token.Identifier;
+    this.kind = id < this.reserved.length && this.reserved[id] === 1 ? FIRST_WORD + id : IDENTIFIER;
   }
 
   #number(start: number): void {
@@ -314,8 +324,8 @@ export class Scanner {
     let hash = EMPTY_HASH;
     while (at < limit) {
       const c = text[at]!;
-      if (charClass[c] === CharClass.Space) break;
-      hash = hashStep(hash, c);
+      if (classes[c] === BLANK) break;
+      hash = step(hash, c);
       at++;
     }
     this.at = at;

@@ -28,8 +28,9 @@ class NameCollector {
   readonly #find: (net: number) => number;
 
   constructor(body: ModuleBody, block: BlockScope, find: (net: number) => number) {
-    this.signals = new SignalTable(body.names.texts);
     this.nets = new Uint32Array(bitsOf(block));
+    const expected = Math.min(block.symbols.count, this.nets.length);
+    this.signals = new SignalTable(body.names.texts, expected);
     this.#body = body;
     this.#block = block;
     this.#find = find;

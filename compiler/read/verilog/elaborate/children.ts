@@ -36,6 +36,15 @@ export class Children {
     this.#budget = budget;
   }
 
+  /** Makes room for so many instances with so many connections in all. */
+  reserve(instances: number, connections: number): void {
+    for (const column of [this.#template, this.#name, this.#block, this.#source, this.#offset]) {
+      column.reserve(instances);
+    }
+    this.#portStart.reserve(instances);
+    this.#ports.reserve(connections);
+  }
+
   get count(): number {
     return this.#template.length;
   }
@@ -89,6 +98,11 @@ export class Children {
       if (net !== NO_NET) visit(netId(net));
     }
     for (const imports of this.#imports.values()) for (const { net } of imports) visit(net);
+  }
+
+  /** Whether any child has imports. */
+  get hasImports(): boolean {
+    return this.#imports.size > 0;
   }
 
   /** Nets of the child that hierarchical names make one with nets of the parent. */

@@ -1,4 +1,5 @@
 import type { NameId } from '../../names.js';
+import { PlainNames } from '../plainNames.js';
 import type { DeclarationItem, DeclaredName } from '../syntax.js';
 import { heldMemory, isHeldFrom, MEMORY_LIMIT, sizeProblem } from './arrays.js';
 import { type BlockScope, wordsOf } from './blockScope.js';
@@ -53,7 +54,32 @@ export function declare(body: ModuleBody, scope: BlockScope, item: DeclarationIt
   const { strength } = item;
   const netClass = netClassOf(body, item);
   const kind: Kind = { range, flags: flagsOf(item, range), netClass, strength };
-  for (const declared of item.names) declareNet(body, scope, declared, kind);
+  if (!(item.names instanceof PlainNames)) {
+    for (const declared of item.names) declareNet(body, scope, declared, kind);
+    return;
+  }
+  item.names.forEach(
+    (name, start, end) => {
+      if (scope.symbols.find(name) < 0) declareWire(body, scope, name, netClass, start, end);
+      else declareNet(body, scope, { name, dimensions: [], value: undefined, start, end }, kind);
+    },
+    (declared) => declareNet(body, scope, declared, kind),
+  );
+}
+
+// A flat netlist declares a million of them.
+function declareWire(
+  body: ModuleBody,
+  { symbols }: BlockScope,
+  name: NameId,
+  netClass: number,
+  start: number,
+  end: number,
+): void {
+  body.buildAt(start);
+  const value = body.builder.declare(1);
+  const { Signal: kind } = SymbolKind;
+  symbols.add({ name, kind, value, start, end, flags: Flag.Typed, netClass });
 }
 
 /** Declares an implicit scalar net (clause 4.5). */

@@ -132,6 +132,17 @@ export class Design {
     return index < 0 ? undefined : this.#at(index);
   }
 
+  /** The template of a module, primitive or cell without overrides if it is made; else -1. */
+  plain(name: NameId): number {
+    const index = this.#definition.get(name);
+    return index < 0 ? -1 : this.#plain[index]! - 1;
+  }
+
+  /** Whether the instances of a definition have names in the circuit. */
+  makesScope(name: NameId): boolean {
+    return !this.isPrimitive(name) || this.blackBoxes.has(name);
+  }
+
   isPrimitive(name: NameId): boolean {
     const { modules, primitives } = this;
     const place = this.#definition.get(name) - modules.length;
@@ -158,6 +169,11 @@ export class Design {
     if (key === '') this.#plain[index] = made + 1;
     else this.#specialised.set(fullKey, made);
     return made;
+  }
+
+  /** The nets of a template with those of all instances inside it. */
+  netsOf(template: number): number {
+    return this.#totals.nets(template);
   }
 
   /** Lets something be done once all modules of the design are compiled. */
@@ -210,13 +226,13 @@ export class Design {
     const twin = this.#twins.get(index);
     if (twin !== undefined) this.shadowed.add(twin);
     if (this.blackBoxes.has(definition.name)) {
-      return this.#add(this.#makers.box(this, definition, overrides, place), definition);
+      return this.add(this.#makers.box(this, definition, overrides, place), definition);
     }
     if ('template' in definition) {
-      return this.#add(definition.template(this, place), definition);
+      return this.add(definition.template(this, place), definition);
     }
     if (!('items' in definition)) {
-      return this.#add(this.#makers.primitive(this, definition), definition);
+      return this.add(this.#makers.primitive(this, definition), definition);
     }
     if (this.#isEndless(definition, key, place)) return NO_TEMPLATE;
     this.#open.push({ key, module: definition });
@@ -224,10 +240,11 @@ export class Design {
     const template = this.#makers.module(this, definition, overrides, outer);
     this.budget.leave(LEVELS_OF_INSTANCE);
     this.#open.pop();
-    return this.#add(template, definition);
+    return this.add(template, definition);
   }
 
-  #add(template: Template, { nameStart }: Definition): number {
+  /** Adds a template, which is that of a definition at `nameStart`; returns its index. */
+  add(template: Template, { nameStart }: Pick<Definition, 'nameStart'>): number {
     this.templates.push(template);
     const nets = this.#totals.add();
     if (nets === undefined) return this.templates.length - 1;

@@ -113,7 +113,8 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
     );
   }
   if (design.diagnostics.hasErrors) return undefined;
-  const builder = new CircuitBuilder(expectedNets(design, top), design.names.texts);
+  const builder = new CircuitBuilder(design.netsOf(index) + SOME, design.names.texts);
+  reserveNames(builder, design, top);
   for (const source of design.sources.sources) builder.addSource(source);
   const stamper = new Stamper(builder, design.templates);
   const boundary = stamper.stamp(top);
@@ -124,14 +125,19 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
   return design.diagnostics.hasErrors ? undefined : builder.finish(top.name);
 }
 
-/** A guess that is good for flat netlists; all it does is to save copying. */
-function expectedNets({ templates }: Design, { recording, children }: Template): number {
-  let nets = recording.netCount + 1024;
-  for (let child = 0; child < children.count; child++) {
-    const { recording, boundary } = templates[children.template(child)]!;
-    nets += recording.netCount - boundary.length;
+// Nets that are made beside those of modules, for buses.
+const SOME = 1024;
+
+/** Makes room for the names of a flat netlist. */
+function reserveNames({ hierarchy }: CircuitBuilder, { templates }: Design, top: Template): void {
+  let scopes = top.blocks.length;
+  let bits = top.blocks.reduce((sum, { nets }) => sum + nets.length, 0);
+  for (let child = 0; child < top.children.count; child++) {
+    const { blocks } = templates[top.children.template(child)]!;
+    scopes += blocks.length;
+    for (const { nets } of blocks) bits += nets.length;
   }
-  return nets;
+  hierarchy.reserve(scopes, bits);
 }
 
 function checkBlackBoxes(design: Design, top: ModuleSyntax): void {

@@ -14,6 +14,9 @@ import { type DeepOverride, noOverrides, type Overrides } from './overrides.js';
 import { SymbolKind } from './symbols.js';
 import { wordBefore, wordFrom } from './wordNear.js';
 
+/** For so many instances room is made at once. */
+const MANY = 10_000;
+
 /**
  * Gives every instance its name in its scope. The value of the symbol is the instance's number
  * among those of modules and primitives, or `NOT_PLACED` for a built-in gate.
@@ -22,6 +25,7 @@ export function nameInstances(body: ModuleBody): void {
   const table = body.module.instances;
   let number = 0;
   for (const { scope, item } of body.instances) {
+    if (item.count >= MANY) scope.symbols.reserve(item.count);
     for (let instance = item.first; instance < item.first + item.count; instance++) {
       const value = table.module(instance) < 0 ? NOT_PLACED : number++;
       const name = table.name(instance);
@@ -38,6 +42,10 @@ export function nameInstances(body: ModuleBody): void {
 export function placeInstances(body: ModuleBody, deep: readonly DeepOverride[]): void {
   const defparams = defparamsOf(body, deep);
   const isPlaced = new Uint8Array(body.placed.length);
+  const { instances } = body.module;
+  if (isPlaced.length >= MANY) {
+    body.children.reserve(isPlaced.length, instances.connectionStart(instances.count));
+  }
   const place = (scope: BlockScope, instance: number, number: number): void => {
     if (isPlaced[number] === 1) return;
     isPlaced[number] = 1;
@@ -94,12 +102,19 @@ function placeInstance(
   const table = module.instances;
   const definition = table.module(instance);
   const position = table.position(instance);
+  const extras = table.extras(instance);
+  const plain = extras === undefined && defparams === undefined ? design.plain(definition) : -1;
+  if (plain >= 0 && table.name(instance) !== 0) {
+    // Most instances of a netlist: a cell that is known already, without parameters.
+    const name = design.makesScope(definition) ? table.name(instance) : 0;
+    body.placed.set(number, addPlainChild(body, plain, name, scope, position));
+    return;
+  }
   if (design.definition(definition) === undefined) {
     // The ports of an unknown black box are known when its connections are.
     if (!design.blackBoxes.has(definition)) design.unknown.add(table, instance);
     return;
   }
-  const extras = table.extras(instance);
   const isPrimitive = design.isPrimitive(definition);
   // What looks like parameters of a primitive is its delay.
   const overrides = isPrimitive ? noOverrides : overridesOf(body, scope, instance, defparams);
@@ -107,7 +122,7 @@ function placeInstance(
   const outer = { host: body, scope, name };
   const template = overrides && design.template(definition, overrides, position, outer);
   if (template === undefined || template === NO_TEMPLATE) return;
-  const hasScope = !isPrimitive || design.blackBoxes.has(definition);
+  const hasScope = design.makesScope(definition);
   if (name === 0 && hasScope) {
     const { start, end } = body.wordAt(position);
     const message = `the instance of module ${body.text(definition)} has no name; give it one`;
@@ -127,13 +142,22 @@ interface Placed {
   readonly position: Position;
 }
 
-function addChild(
+function addPlainChild(
   { design, children, sources }: ModuleBody,
-  { template, name, scope, position }: Placed,
+  template: number,
+  name: NameId,
+  scope: BlockScope,
+  position: Position,
 ): number {
-  const { boundary, outerNets = [] } = design.templates[template]!;
+  const { boundary } = design.templates[template]!;
   const { index: source, offset } = sources.locate(position);
-  const child = children.add(template, name, scope.index, { source, offset }, boundary.length);
+  return children.add(template, name, scope.index, { source, offset }, boundary.length);
+}
+
+function addChild(body: ModuleBody, { template, name, scope, position }: Placed): number {
+  const { design, children } = body;
+  const { boundary, outerNets = [] } = design.templates[template]!;
+  const child = addPlainChild(body, template, name, scope, position);
   for (const { net, outside } of outerNets) {
     const place = boundary.indexOf(net);
     if (place < 0) children.adopt(child, net, outside);

@@ -111,6 +111,13 @@ export class Recording implements GateSink {
     this.#atOffset = offset;
   }
 
+  /** Makes room for so many nets. */
+  reserve(nets: number): void {
+    for (const column of [this.#netSource, this.#netOffset, this.#firstDriver])
+      column.reserve(nets);
+    this.#declared.reserve(nets);
+  }
+
   get netCount(): number {
     return this.#netOffset.length;
   }

@@ -13,6 +13,9 @@ import { noOverrides, type Overrides } from './overrides.js';
 import { bindParameters } from './parameters.js';
 import { SymbolKind } from './symbols.js';
 
+/** For so many names room is made at once. */
+const MANY = 10_000;
+
 /**
  * Declares everything that stands in a module, and hands the rest of its items to the lists of
  * work in `body`, generate constructs expanded.
@@ -58,8 +61,18 @@ function declareNames(
   scope.pending = items;
   bindRoutines(body, scope, items);
   bindParameters(body, scope, items, overrides);
+  reserve(body, scope, items);
   for (const item of items) if (item.kind === 'declaration') declare(body, scope, item);
   scope.pending = pending;
+}
+
+/** Makes room for the names of a flat netlist, of which there may be a million. */
+function reserve(body: ModuleBody, scope: BlockScope, items: readonly Item[]): void {
+  let names = 0;
+  for (const item of items) if (item.kind === 'declaration') names += item.names.length;
+  if (names < MANY) return;
+  scope.symbols.reserve(names);
+  body.builder.reserve(body.builder.netCount + names);
 }
 
 const expandItems: ExpandItems = (body, scope, items) => {

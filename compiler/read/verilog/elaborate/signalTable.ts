@@ -15,12 +15,14 @@ interface Rarity {
 export class SignalTable implements LazyList<Signal> {
   readonly #names: NameSource;
   // The name of each signal and then its offset.
-  readonly #columns = new GrowableUint32(4);
+  readonly #columns: GrowableUint32;
   #rarities: Map<number, Rarity> | undefined;
   #bits = 0;
 
-  constructor(names: NameSource) {
+  /** Room for `expected` signals is made at once. */
+  constructor(names: NameSource, expected = 2) {
     this.#names = names;
+    this.#columns = new GrowableUint32(2 * Math.max(expected, 1));
   }
 
   get length(): number {

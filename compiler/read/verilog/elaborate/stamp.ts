@@ -80,7 +80,9 @@ export class Stamper {
       const net = children.port(child, place);
       if (net !== NO_NET) nets[boundary[place]!] = parent.nets[net]!;
     }
-    for (const { childNet, net } of children.imports(child)) nets[childNet] = parent.nets[net]!;
+    if (children.hasImports) {
+      for (const { childNet, net } of children.imports(child)) nets[childNet] = parent.nets[net]!;
+    }
     this.#fill(frame);
     const name = children.name(child);
     if (name !== 0) this.#addScopes(frame, name, parent.scopes[children.block(child)]!);
@@ -206,6 +208,7 @@ export class Stamper {
 
   /** Adds the memories of a template with their ports; the scopes must be there. */
   #addMemories({ template: { recording }, nets, scopes, origin: cell }: Frame): void {
+    if (recording.memories.length === 0) return;
     const builder = this.#builder;
     const moved = (list: readonly NetId[]): NetId[] => list.map((net) => netId(nets[net]!));
     for (const memory of recording.memories) {

@@ -86,6 +86,11 @@ export class SymbolTable {
     return this.#count;
   }
 
+  /** Makes room for so many symbols more. */
+  reserve(more: number): void {
+    this.#records.reserve((this.#count + more) * RECORD);
+  }
+
   /** The symbol of a name, or -1. */
   find(name: NameId): number {
     if (this.#index !== undefined) return this.#index.get(name);
@@ -93,6 +98,22 @@ export class SymbolTable {
       if (this.#get(symbol, Field.Name) === name) return symbol;
     }
     return -1;
+  }
+
+  /**
+   * The net of a name that is a signal of one bit, and no variable where `drives` asks for a net;
+   * else -1. Nearly all connections of a netlist are such.
+   */
+  scalar(name: NameId, drives: boolean): number {
+    const symbol = this.find(name);
+    if (symbol < 0) return -1;
+    const records = this.#records;
+    const at = symbol * RECORD;
+    const traits = records.get(at + Field.Traits);
+    if ((traits & BYTE) !== SymbolKind.Signal) return -1;
+    if (drives && ((traits >> FLAGS) & Flag.Variable) !== 0) return -1;
+    const isScalar = records.get(at + Field.Msb) === records.get(at + Field.Lsb);
+    return isScalar ? records.get(at + Field.Value) : -1;
   }
 
   /** Adds a symbol; the name must be new. */

@@ -26,6 +26,8 @@ export function simpleNet(
   const kind = table.connectionKind(connection);
   if (kind !== ConnectionKind.Name && kind !== ConnectionKind.Bit) return NOT_SIMPLE;
   const name = table.connectionFirst(connection);
+  const scalar = kind === ConnectionKind.Name ? scope.symbols.scalar(name, drives) : -1;
+  if (scalar >= 0) return netId(scalar);
   const owner = scope.owner(name) ?? implicitOwner(body, scope, table, connection);
   if (owner === undefined) return NOT_SIMPLE;
   const { symbols } = owner;

@@ -24,6 +24,11 @@ export class Totals {
     this.#most = LEAST_NUMBERS + bytes * NUMBERS_PER_BYTE;
   }
 
+  /** The nets of a template with those of all instances inside it. */
+  nets(template: number): number {
+    return this.#nets[template]!;
+  }
+
   /** Counts the template added last; returns its nets if they are too many, else undefined. */
   add(): number | undefined {
     const { recording, children, blocks } = this.#templates[this.#templates.length - 1]!;

@@ -39,7 +39,7 @@ export function connectUnknownBox(body: ModuleBody, scope: BlockScope, instance:
     if (pins.every((each) => each.name !== pin.name)) pins.push(pin);
     else reportTwice(body, instance, connection);
   }
-  const template = design.templates.push(boxTemplate(name, pins, false)) - 1;
+  const template = design.add(boxTemplate(name, pins, false), { nameStart: position });
   const { index: source, offset } = sources.locate(position);
   const nets = pins.flatMap((pin) => pin.nets);
   const own = table.name(instance);
