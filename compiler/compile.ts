@@ -27,6 +27,7 @@ import { orderSinks } from './passes/orderSinks.js';
 import { type PackedLogic, packWords } from './passes/packWords/packWords.js';
 import { transitions } from './passes/transition/transition.js';
 import type { CyclePrograms, Program } from './program/program.js';
+import type { PassSwitches } from './program/switches.js';
 
 /** What the stages after reading need to know. */
 export interface CompileOptions {
@@ -72,8 +73,12 @@ export interface DesignCycles extends Omit<CyclePrograms, 'programs' | 'derived'
 }
 
 /** The first pass: from a circuit to its cycles, each as a Boolean function. */
-export function cyclesOf({ circuit, clocks, schedule, layout }: Design): DesignCycles {
-  const cycles = transitions(circuit, clocks, schedule, { threeValued: layout.threeValued });
+export function cyclesOf(
+  { circuit, clocks, schedule, layout: { threeValued } }: Design,
+  { share, recover }: PassSwitches = {},
+): DesignCycles {
+  const options = { threeValued, share: share ?? true, recover: recover ?? true };
+  const cycles = transitions(circuit, clocks, schedule, options);
   return { cycles, pattern: schedule.pattern, memories: shapesOf(circuit) };
 }
 
@@ -81,16 +86,23 @@ export function cyclesOf({ circuit, clocks, schedule, layout }: Design): DesignC
  * The passes, in order: from a circuit to the programs that emission and interpretation take. With
  * `observes` they only compute the outputs: state and memories come to nothing.
  */
-export const programsOf = (design: Design, observes = false): CyclePrograms =>
-  plainPrograms(cyclesOf(design), observes);
+export const programsOf = (
+  design: Design,
+  observes = false,
+  passes: PassSwitches = {},
+): CyclePrograms => plainPrograms(cyclesOf(design, passes), passes, observes);
 
-function plainPrograms({ cycles: whole, ...rest }: DesignCycles, observes = false): CyclePrograms {
+function plainPrograms(
+  { cycles: whole, ...rest }: DesignCycles,
+  passes: PassSwitches,
+  observes = false,
+): CyclePrograms {
   const cycles = observes ? whole.map(withoutNext) : whole;
   // Cycles of several kinds work on the same state bits: none of them may move or turn any.
   const areSeveral = cycles.length > 1 || observes;
   const programs = cycles.map((cycle) => {
-    const whole = compact(cycle, areSeveral);
-    return plainProgram(areSeveral ? whole : compact(groupRegisters(whole)), areSeveral);
+    const whole = compacted(cycle, passes, areSeveral);
+    return plainProgram(areSeveral ? whole : grouped(whole, passes), passes, areSeveral);
   });
   return { programs, ...rest };
 }
@@ -116,36 +128,60 @@ const withoutNext = (logic: Logic): Logic => ({
  * `start` is the only state that the model will be reset to, with which registers can be merged.
  * Cycles of several kinds share their state and are left as `programsOf` makes them.
  */
-export const packedProgramsOf = (design: Design, start?: Uint8Array): CyclePrograms =>
-  packedPrograms(cyclesOf(design), start);
+export const packedProgramsOf = (
+  design: Design,
+  start?: Uint8Array,
+  passes: PassSwitches = {},
+): CyclePrograms => packedPrograms(cyclesOf(design, passes), start, passes);
 
 /** The passes of `packedProgramsOf` behind the first one. */
-export function packedPrograms(design: DesignCycles, start?: Uint8Array): CyclePrograms {
+export function packedPrograms(
+  design: DesignCycles,
+  start?: Uint8Array,
+  passes: PassSwitches = {},
+): CyclePrograms {
   const { cycles, ...rest } = design;
   const [cycle, another] = cycles;
-  if (another !== undefined) return plainPrograms(design);
-  const whole = compact(cycle!);
-  const { logic, derived } = start ? merged(whole, start) : { logic: whole, derived: [] };
-  const packed = packWords(logic);
-  const program = packed ? packedProgram(packed) : plainProgram(compact(groupRegisters(logic)));
+  if (another !== undefined) return plainPrograms(design, passes);
+  const whole = compacted(cycle!, passes);
+  const { logic, derived } = merged(whole, passes, start);
+  const packed = passes.packWords === false ? undefined : packWords(logic);
+  const program = packed
+    ? packedProgram(packed, passes)
+    : plainProgram(grouped(logic, passes), passes);
   return { programs: [program], ...rest, derived };
 }
 
-function merged(logic: Logic, start: Uint8Array): Merged {
-  const { logic: smaller, derived } = mergeRegisters(logic, startBits(logic.states, start));
-  return { logic: compact(smaller), derived };
+const compacted = (logic: Logic, passes: PassSwitches, keepsStates = false): Logic =>
+  passes.compact === false ? logic : compact(logic, keepsStates);
+
+const grouped = (logic: Logic, passes: PassSwitches): Logic =>
+  passes.groupRegisters === false ? logic : compacted(groupRegisters(logic), passes);
+
+function merged(logic: Logic, passes: PassSwitches, start: Uint8Array | undefined): Merged {
+  const { share, recover, mergeRegisters: merges } = passes;
+  if (start === undefined || share === false || merges === false) return { logic, derived: [] };
+  const smaller = mergeRegisters(logic, startBits(logic.states, start), { recover });
+  return { logic: compacted(smaller.logic, passes), derived: smaller.derived };
 }
 
-function packedProgram(packed: PackedLogic): Program {
-  const order = orderNodes(packed.scalar, orderSinks(packed.scalar));
-  return buildPackedProgram(packed, order, choosePolarity(packed.scalar, packed.fixedStates));
+function packedProgram(packed: PackedLogic, passes: PassSwitches): Program {
+  const { scalar, fixedStates } = packed;
+  const inverted = polarity(scalar, passes, fixedStates);
+  return buildPackedProgram(packed, ordered(scalar, passes), inverted, passes.blockNodes);
 }
 
-function plainProgram(logic: Logic, keepsStates = false): Program {
-  const order = orderNodes(logic, orderSinks(logic));
-  const inverted = choosePolarity(logic, keepsStates);
-  return buildProgram(logic, order, cutBlocks(logic, order), inverted);
+function plainProgram(logic: Logic, passes: PassSwitches, keepsStates = false): Program {
+  const order = ordered(logic, passes);
+  const inverted = polarity(logic, passes, keepsStates);
+  return buildProgram(logic, order, cutBlocks(logic, order, passes.blockNodes), inverted);
 }
+
+const ordered = (logic: Logic, passes: PassSwitches): Uint32Array =>
+  orderNodes(logic, passes.orderSinks === false ? sinksOf(logic) : orderSinks(logic));
+
+const polarity = (logic: Logic, passes: PassSwitches, kept: boolean | Uint8Array): Uint8Array =>
+  passes.choosePolarity === false ? new Uint8Array(logic.nodeCount) : choosePolarity(logic, kept);
 
 // Without the ports, which are part of the programs.
 const shapesOf = ({ memories }: Circuit): MemoryShape[] =>
@@ -166,6 +202,10 @@ export async function compile(
   emitter: Emitter = localEmitter(),
   { start, ...options }: ModelOptions = {},
 ): Promise<WasmModel> {
-  const model = await emitter.emit(packedProgramsOf(design, start), design.layout, options);
+  const model = await emitter.emit(
+    packedProgramsOf(design, start, options.passes),
+    design.layout,
+    options,
+  );
   return start === undefined ? model : { ...model, start };
 }

@@ -6,7 +6,13 @@ export type { Circuit, Latches, Port, Registers } from './circuit/circuit.js';
 export { type ClockPort, type ClockPorts, findClockPorts } from './circuit/clockPorts.js';
 export type { ClockSchedule, ClockTiming } from './circuit/clockSchedule.js';
 export { type PowerUp, powerUpModes, powerUpState } from './circuit/powerUp.js';
-export { type CompileOptions, compile, type Design, designOf } from './compile.js';
+export {
+  type CompileOptions,
+  compile,
+  type Design,
+  designOf,
+  type ModelOptions,
+} from './compile.js';
 export { compileLanes } from './compileLanes.js';
 export { codeTable, type DiagnosticCode, type Severity } from './diagnostics/codes.js';
 export { type Diagnostic, Diagnostics, headline, InputError } from './diagnostics/diagnostics.js';
@@ -15,6 +21,7 @@ export { type Emitter, localEmitter, startEmitter } from './emit/emitter.js';
 export { createEngine, type EngineName, engineNames } from './engines.js';
 export { type PackRequest, type PackSummary, packDesign } from './pack/packDesign.js';
 export { PeriodSearch, type PeriodSearchOptions } from './period/periodSearch.js';
+export { type PassSwitches, passNames } from './program/switches.js';
 export { type NetlistReadOptions, readNetlist } from './read/readNetlist.js';
 export { hashedInput, inputOf } from './record/inputs.js';
 export { type Manifest, manifestOf, type RecordedInput } from './record/manifest.js';

@@ -13,7 +13,7 @@ async function modelOf({ layout, work }: CompileRequest): Promise<WasmModel | La
   if ('programs' in work) return emitModel(await binaryen, work.programs, layout, work.options);
   if ('lanes' in work) return emitLanes(await binaryen, work.lanePrograms, layout, work.lanes);
   const { start, ...options } = work.options;
-  const programs = packedPrograms(work.cycles, start);
+  const programs = packedPrograms(work.cycles, start, options.passes);
   const model = emitModel(await binaryen, programs, layout, options);
   return start === undefined ? model : { ...model, start };
 }

@@ -8,6 +8,7 @@ import {
   segmentsOf,
 } from '../program/memoryPlaces.js';
 import type { CyclePrograms, Program } from '../program/program.js';
+import type { PassSwitches } from '../program/switches.js';
 import { type AreaLayout, layArea } from './areaLayout.js';
 import { BlockEmitter, type Emission, type Pointers } from './blockEmitter.js';
 import { compareState } from './compareState.js';
@@ -43,6 +44,8 @@ export const loadBinaryen = async (): Promise<typeof binaryen> =>
 export interface EmitOptions {
   /** Its run loop can look for a state; see `compareState`. Costs some time in every cycle. */
   readonly comparesState?: boolean;
+  /** Passes to leave out; all are made unless given. */
+  readonly passes?: PassSwitches;
 }
 
 /** Emits programs as a WebAssembly module; `wasm` is the loaded Binaryen library. */
@@ -50,7 +53,7 @@ export function emitModel(
   wasm: typeof binaryen,
   { programs, pattern, memories: shapes, derived }: CyclePrograms,
   layout: ModelLayout,
-  { comparesState = false }: EmitOptions = {},
+  { comparesState = false, passes = {} }: EmitOptions = {},
 ): WasmModel {
   const module = new wasm.Module();
   try {
@@ -70,7 +73,7 @@ export function emitModel(
     module.setMemory(pages, 65536, 'memory', segments, false, false, '0');
     addGlobals(module, wasm.i32, areas[0]);
     const cycles = programs.map((program, index) =>
-      cycleCode(wasm, module, program, { area: layouts[index]!, memories, index }),
+      cycleCode(wasm, module, program, { area: layouts[index]!, memories, index, passes }),
     );
     const parameters = wasm.createType(new Array(RunLocal.Current).fill(wasm.i32));
     const localCount = Math.max(...cycles.map((cycle) => cycle.localCount));
@@ -90,7 +93,8 @@ export function emitModel(
       runLoop(module, wasm.i32, place, cycles),
     );
     module.addFunctionExport('run', 'run');
-    if (canHaveTable({ programs, pattern, memories: shapes }, layout))
+    const mayHaveTable = passes.tables !== false;
+    if (mayHaveTable && canHaveTable({ programs, pattern, memories: shapes }, layout))
       addTableLoop(wasm, module, layout);
     return {
       bytes: Uint8Array.from(module.emitBinary()),
@@ -121,6 +125,7 @@ interface CyclePlaces {
   readonly area: AreaLayout;
   readonly memories: MemoryPlaces;
   readonly index: number;
+  readonly passes: PassSwitches;
 }
 
 // The code of one cycle, with its outputs packed into the response row.
@@ -147,11 +152,11 @@ function plainCode(
   wasm: typeof binaryen,
   module: binaryen.Module,
   program: Program,
-  { area, memories, index }: CyclePlaces,
+  { area, memories, index, passes }: CyclePlaces,
 ): CycleCode {
   const { i32 } = wasm;
   const isSmall = program.blockStart.length === 2 && program.stateCount < COPIES_IN_BLOCK;
-  const groups = outputGroups(program);
+  const groups = outputGroups(program, passes.aliasOutputs);
   const packsValues = isSmall && program.outputs.length <= SCALAR_OUTPUTS;
   const sinks = storesOf(program, area, packsValues ? [] : outputsInMemory(groups));
   const emission: Emission = { module, i32, program, area, sinks, memories };
@@ -169,9 +174,9 @@ function packedCode(
   wasm: typeof binaryen,
   module: binaryen.Module,
   program: Program,
-  { area, memories, index }: CyclePlaces,
+  { area, memories, index, passes }: CyclePlaces,
 ): CycleCode {
-  const groups = outputGroups(program);
+  const groups = outputGroups(program, passes.aliasOutputs);
   const sinks = storesOf(program, area, outputsInMemory(groups));
   const emission: Emission = { module, i32: wasm.i32, program, area, sinks, memories };
   const homes = stepHomes(program.vectors!, vectorParts(program.vectors!).flat());

@@ -17,9 +17,9 @@ export interface OutputGroup {
 
 /**
  * Cuts the outputs into groups, except what vectors make, and finds those that are neighbouring
- * state bits.
+ * state bits, unless `aliases` is false.
  */
-export function outputGroups(program: Program): OutputGroup[] {
+export function outputGroups(program: Program, aliases = true): OutputGroup[] {
   const groups: OutputGroup[] = [];
   const { outputs } = program;
   const byVector = new Set(program.vectors?.outputs.map(({ to }) => to));
@@ -30,7 +30,7 @@ export function outputGroups(program: Program): OutputGroup[] {
     const start = outputs[first]!;
     const isState = start >= states && start + count <= firstResult(program);
     const isRun = outputs.subarray(first, first + count).every((value, i) => value === start + i);
-    groups.push({ first, count, state: isState && isRun ? start - states : -1 });
+    groups.push({ first, count, state: aliases && isState && isRun ? start - states : -1 });
   }
   return groups;
 }

@@ -4,11 +4,11 @@ import { FALSE, type Literal, LogicOp, TRUE } from './logic.js';
 /** Which simplifications a `LogicBuilder` makes; all by default. Off only for measurements. */
 export interface LogicOptions {
   /** Equal nodes are made once (structural hashing). */
-  readonly share?: boolean;
+  readonly share?: boolean | undefined;
   /** Constants, equal and opposite operands, absorption. */
-  readonly fold?: boolean;
+  readonly fold?: boolean | undefined;
   /** Exclusive-ors and multiplexers are recognised in and/or form. */
-  readonly recover?: boolean;
+  readonly recover?: boolean | undefined;
 }
 
 /**

@@ -20,6 +20,7 @@ export function buildPackedProgram(
   packed: PackedLogic,
   order: Uint32Array,
   inverted: Uint8Array,
+  blockNodes?: number,
 ): Program {
   const { scalar, plan, stageOf, stageCount } = packed;
   const writer = new ProgramWriter(scalar, inverted);
@@ -31,6 +32,7 @@ export function buildPackedProgram(
       packed,
       writer,
       order.filter((node) => stageOf[node] === stage),
+      blockNodes,
     );
     stepEnd += plan.steps.filter((step) => step.stage === stage).length;
     const gathers = packed.gathers
@@ -55,8 +57,13 @@ export function buildPackedProgram(
   };
 }
 
-function writeStage({ scalar }: PackedLogic, writer: ProgramWriter, nodes: Uint32Array): void {
-  const starts = cutBlocks(scalar, nodes);
+function writeStage(
+  { scalar }: PackedLogic,
+  writer: ProgramWriter,
+  nodes: Uint32Array,
+  blockNodes: number | undefined,
+): void {
+  const starts = cutBlocks(scalar, nodes, blockNodes);
   let block = 1;
   for (const [place, node] of nodes.entries()) {
     if (place === starts[block]) {

@@ -5,21 +5,22 @@ import { type Logic, LogicOp } from '../logic/logic.js';
  * some 6,000 the optimizing tier of a WebAssembly engine may fall back to a weaker register
  * allocator.
  */
-const LEAST = 500;
+const LEAST_PART = 5 / 12;
 const MOST = 1200;
 
 /**
- * Cuts an order of nodes into blocks, each to become one function: between `LEAST` and `MOST` nodes,
- * at the place that the fewest values cross, since each of these passes through memory.
+ * Cuts an order of nodes into blocks, each to become one function: between five twelfths of
+ * `most` and `most` nodes, at the place that the fewest values cross, since each of these passes through memory.
  *
  * Returns the places in `order` at which blocks start, the first being 0.
  */
-export function cutBlocks(logic: Logic, order: Uint32Array): number[] {
+export function cutBlocks(logic: Logic, order: Uint32Array, most = MOST): number[] {
+  const least = Math.ceil(most * LEAST_PART);
   const crossing = crossingValues(logic, order);
   const starts = [0];
-  for (let start = 0; start + MOST < order.length; ) {
-    let best = start + LEAST;
-    for (let place = best; place <= start + MOST; place++) {
+  for (let start = 0; start + most < order.length; ) {
+    let best = start + least;
+    for (let place = best; place <= start + most; place++) {
       if (crossing[place]! <= crossing[best]!) best = place;
     }
     starts.push(best);

@@ -1,6 +1,6 @@
 import type { DerivedState } from '../../../runtime/stateBits.js';
 import { FALSE, type Literal, type Logic, LogicOp } from '../../logic/logic.js';
-import { LogicBuilder } from '../../logic/logicBuilder.js';
+import { LogicBuilder, type LogicOptions } from '../../logic/logicBuilder.js';
 import { signaturesOf } from './signatures.js';
 
 /** Nodes walked in all rounds together; beyond that the graph is left as it is. */
@@ -21,12 +21,16 @@ export interface Merged {
  * the cycles (C. van Eijk, "Sequential equivalence checking without state space traversal", DATE
  * 1998, with structural hashing as the proof). The result holds for runs from that state only.
  */
-export function mergeRegisters(logic: Logic, start: Uint8Array): Merged {
+export function mergeRegisters(
+  logic: Logic,
+  start: Uint8Array,
+  options: LogicOptions = {},
+): Merged {
   const unchanged = { logic, derived: [] };
   if (logic.states.length === 0 || hasMemory(logic)) return unchanged;
   let classes = Classes.of(signaturesOf(logic, start));
   for (let walked = logic.nodeCount; walked < BUDGET; walked += logic.nodeCount) {
-    const build = new Build(logic, start, classes);
+    const build = new Build(logic, start, classes, options);
     const finer = classes.split(build.next, start);
     if (finer.count === classes.count) {
       return classes.count === logic.states.length + 1 ? unchanged : build.merged();
@@ -76,13 +80,14 @@ class Build {
   readonly #logic: Logic;
   readonly #start: Uint8Array;
   readonly #classes: Classes;
-  readonly #builder = new LogicBuilder();
+  readonly #builder: LogicBuilder;
   /** Per class its first bit, and the place of that bit in the new graph. */
   readonly #leader: Int32Array;
   readonly #place: Int32Array;
   readonly #literals: Uint32Array;
 
-  constructor(logic: Logic, start: Uint8Array, classes: Classes) {
+  constructor(logic: Logic, start: Uint8Array, classes: Classes, options: LogicOptions) {
+    this.#builder = new LogicBuilder(options);
     this.#logic = logic;
     this.#start = start;
     this.#classes = classes;
