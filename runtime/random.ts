@@ -109,7 +109,7 @@ export const powerUpSeed = (seed: number | bigint): bigint => seedOf(seed) ^ POW
 const POWER_UP_MIX = 0x706f_7765_722d_7570n;
 
 function seedOf(seed: number | bigint): bigint {
-  if (typeof seed === 'number' && !Number.isSafeInteger(seed)) {
+  if (typeof seed !== 'bigint' && !Number.isSafeInteger(seed)) {
     throw new RangeError(`a seed is a safe integer or a bigint, got ${seed}`);
   }
   return BigInt(seed) & MASK64;

@@ -8,6 +8,8 @@ const MOST_NETS = 1000;
 /** The text of `model.d.ts`: the interface of the package with the netlist's own names. */
 export function declarations(layout: ModelLayout, nets: readonly KeptNet[]): string {
   const { name, threeValued, inputs, outputs, clocks } = layout;
+  const isOfObjects = [...inputs.ports, ...outputs.ports].some((port) => port.name in {});
+  const some = isOfObjects ? SOME : 'Partial';
   return `/**
  * ${comment(name)}, a clocked circuit as a module. Values are numbers up to 32 bits and bigints above${
    threeValued
@@ -28,7 +30,7 @@ ${netTypes(nets, threeValued)}
 /** Clocks tick by themselves, once in each cycle: ${comment(clocks.join(', ') || 'there is none')}. */
 export type Clock = ${clocks.map((clock) => JSON.stringify(clock)).join(' | ') || 'never'};
 
-${common(threeValued)}`;
+${some === SOME ? SOME_TYPE : ''}${common(threeValued, some)}`;
 }
 
 function ports(
@@ -67,6 +69,18 @@ function valueType(width: number, threeValued: boolean): string {
 // The type of texts such as 0b10x1.
 const TEXT_TYPE = ['`0b', '{string}`'].join('$');
 
+const SOME = 'Some';
+
+// Every object has members of these names, which `Partial` would hold against it.
+const SOME_TYPE = `/** Some of the values; a port may be called as a member that all objects have. */
+export type Some<Values> = {
+  readonly [Name in keyof Values]?:
+    | Values[Name]
+    | (Name extends keyof Object ? Object[Name] : never);
+};
+
+`;
+
 const bits = (width: number): string => (width === 1 ? '1 bit' : `${width} bits`);
 
 // Names may hold anything, in escaped identifiers.
@@ -74,6 +88,7 @@ const comment = (text: string): string => text.replaceAll('*/', '* /');
 
 const common = (
   threeValued: boolean,
+  some: string,
 ): string => `/** A port: its bits stand at \`offset\` in a packed row. */
 export interface Port<Name extends string = string> {
   readonly name: Name;
@@ -103,11 +118,11 @@ export type Column = Uint8Array | Uint16Array | Uint32Array;
 export interface RunRequest<Name extends keyof Outputs = keyof Outputs> {
   readonly cycles: number;
   /** Inputs left out hold the values they have. */
-  readonly stimulus?: { readonly [Input in keyof Inputs]?: Column };
+  readonly stimulus?: ${some}<Record<keyof Inputs, Column>>;
 ${
   threeValued
     ? `  /** A 1 for each bit of the stimulus that is x. */
-  readonly unknown?: { readonly [Input in keyof Inputs]?: Column };
+  readonly unknown?: ${some}<Record<keyof Inputs, Column>>;
 `
     : ''
 }  /** Outputs to record; all unless given. */
@@ -173,7 +188,7 @@ interface About {
  */
 export interface Model extends About {
   /** Gives inputs new values; those left out keep theirs. */
-  write(values: Partial<Inputs>): this;
+  write(values: ${some}<Inputs>): this;
   /** All outputs, or the value of one port. */
   read(): Outputs;
   read<Name extends keyof Ports>(name: Name): Ports[Name];
@@ -184,7 +199,7 @@ export interface Model extends About {
   /** The same on packed rows; with \`stride\` 0 the one row holds for all cycles. */
   runRows(cycles: number, stimulus: Uint32Array, response?: Uint32Array, stride?: number): this;
   /** Runs until outputs have these values, or the function returns true; at most \`limit\` cycles. */
-  runUntil(condition: Partial<Outputs> | ((model: this) => boolean), limit: number): Reached;
+  runUntil(condition: ${some}<Outputs> | ((model: this) => boolean), limit: number): Reached;
   /** The value of a port, a register or a kept net. */
   peek<Name extends keyof Ports | keyof Nets>(name: Name): (Ports & Nets)[Name];
   save(): SavedState;
@@ -207,7 +222,7 @@ export interface CallOptions {
 
 /** The same in a worker: a promise for each answer. */
 export interface WorkerModel extends About {
-  write(values: Partial<Inputs>): Promise<void>;
+  write(values: ${some}<Inputs>): Promise<void>;
   read(): Promise<Outputs>;
   read<Name extends keyof Ports>(name: Name): Promise<Ports[Name]>;
   step(cycles?: number, options?: CallOptions): Promise<void>;
@@ -222,7 +237,7 @@ export interface WorkerModel extends About {
     response?: Uint32Array,
     stride?: number,
   ): Promise<Uint32Array<ArrayBuffer> | undefined>;
-  runUntil(values: Partial<Outputs>, limit: number, options?: CallOptions): Promise<Reached>;
+  runUntil(values: ${some}<Outputs>, limit: number, options?: CallOptions): Promise<Reached>;
   peek<Name extends keyof Ports | keyof Nets>(name: Name): Promise<(Ports & Nets)[Name]>;
   save(): Promise<SavedState>;
   restore(state: SavedState | string): Promise<void>;

@@ -9,7 +9,8 @@ import {
   readRows,
 } from './columns.js';
 import type { Core } from './core.js';
-import type { Ports } from './ports.js';
+import { checkNames, type Ports } from './ports.js';
+import { checkFields, shown } from './values.js';
 
 /** Columns by port name. */
 export type Columns = Readonly<Record<string, Column>>;
@@ -51,14 +52,17 @@ export class BlockRun {
 
   constructor(core: Core, ports: Ports, request: BlockRequest) {
     const { layout, inputStride, outputStride } = core;
-    const { cycles, response = layout.outputs.ports.map(({ name }) => name) } = request;
+    const { cycles, response = layout.outputs.ports.map(({ name }) => name) } = checkFields(
+      request,
+      'a request such as { cycles: 1 }',
+    );
     this.#core = core;
     this.#cycles = checkCycles(cycles);
     if (request.unknown !== undefined && !layout.threeValued) {
       throw new RangeError('expected no unknown bits in a model of two values, got some');
     }
     const placed = (columns: Columns = {}, group: number): PlacedColumn[] =>
-      Object.entries(columns).map(([name, column]) => {
+      Object.entries(checkFields(columns, 'columns by port')).map(([name, column]) => {
         const port = ports.input(name);
         return { port, column: checkColumn(port, column, cycles), group };
       });
@@ -66,7 +70,7 @@ export class BlockRun {
       ...placed(request.stimulus, 0),
       ...placed(request.unknown, layout.inputs.words),
     ];
-    const watched = response.map((name) => ports.output(name));
+    const watched = checkNames(response).map((name) => ports.output(name));
     const record = newRecord(watched, cycles);
     const unknown = layout.threeValued ? newRecord(watched, cycles) : undefined;
     this.result = { cycles, response: record, ...(unknown && { unknown }) };
@@ -118,7 +122,7 @@ export class BlockRun {
 /** Throws RangeError unless the number is a count of cycles. */
 export function checkCycles(cycles: unknown): number {
   if (Number.isSafeInteger(cycles) && (cycles as number) >= 0) return cycles as number;
-  throw new RangeError(`expected a count of cycles, got ${String(cycles)}`);
+  throw new RangeError(`expected a count of cycles, got ${shown(cycles)}`);
 }
 
 function clearPort(row: Uint32Array, { words }: RowLayout, { offset, width }: PortLayout): void {

@@ -1,6 +1,6 @@
 import type { PortLayout } from '../layout.js';
 import type { Core } from './core.js';
-import type { Ports } from './ports.js';
+import { checkNames, type FoundPort, type Ports } from './ports.js';
 import { readValue, type Value } from './values.js';
 
 /** Told which of the ports have other values than when it was told last. */
@@ -8,7 +8,7 @@ export type ChangeListener = (changes: Readonly<Record<string, Value>>, cycle: n
 
 interface Subscription {
   readonly listener: ChangeListener;
-  readonly watched: readonly { readonly port: PortLayout; readonly isInput: boolean }[];
+  readonly watched: readonly FoundPort[];
   readonly last: Map<string, Value>;
 }
 
@@ -27,9 +27,7 @@ export class Changes {
     if (typeof listener !== 'function') {
       throw new TypeError(`expected a listener, got ${typeof listener}`);
     }
-    const watched = names.map(
-      (name) => ports.find(name) ?? { port: ports.output(name), isInput: false },
-    );
+    const watched = checkNames(names).map((name) => ports.any(name));
     const subscription = { listener, watched, last: new Map<string, Value>() };
     for (const { port, isInput } of watched) {
       subscription.last.set(port.name, this.#value(port, isInput));

@@ -1,7 +1,7 @@
 import { RunFault } from '../engine.js';
 import type { Core } from './core.js';
 import type { Ports } from './ports.js';
-import { type Value, writeValue } from './values.js';
+import { checkFields, type Value, writeValue } from './values.js';
 
 /** Values of outputs that must all be there. */
 export type OutputValues = Readonly<Record<string, Value>>;
@@ -36,7 +36,9 @@ export class Search {
     this.#wanted = new Uint32Array(core.outputStride);
     this.#mask = new Uint32Array(core.outputStride);
     const { outputs, threeValued } = core.layout;
-    for (const [name, value] of Object.entries(values)) {
+    for (const [name, value] of Object.entries(
+      checkFields(values, 'values of outputs or a function'),
+    )) {
       const port = ports.output(name);
       writeValue(core.row(this.#wanted, outputs), port, value);
       for (let bit = port.offset; bit < port.offset + port.width; bit++) {

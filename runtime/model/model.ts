@@ -10,7 +10,7 @@ import { Ports } from './ports.js';
 import type { PowerUpOptions } from './powerUp.js';
 import { powerUpState } from './powerUp.js';
 import { type SavedState, saved, standingOf } from './savedState.js';
-import { readValue, type Value, writeValue } from './values.js';
+import { checkFields, readValue, shown, type Value, writeValue } from './values.js';
 
 interface Parts {
   readonly core: Core;
@@ -74,7 +74,7 @@ export class Model {
     const { inputs, layout } = this.#live;
     // All or nothing: a value that is refused leaves no other one behind.
     const changed = inputs.slice();
-    for (const [name, value] of Object.entries(values)) {
+    for (const [name, value] of Object.entries(checkFields(values, 'values of inputs'))) {
       writeValue(this.#live.row(changed, layout.inputs), this.#own.ports.input(name), value);
     }
     inputs.set(changed);
@@ -92,9 +92,8 @@ export class Model {
       const { ports } = layout.outputs;
       return Object.fromEntries(ports.map((port) => [port.name, this.#output(port)]));
     }
-    const found = this.#own.ports.find(name);
-    if (found?.isInput) return this.#input(found.port);
-    return this.#output(found?.port ?? this.#own.ports.output(name));
+    const { port, isInput } = this.#own.ports.any(name);
+    return isInput ? this.#input(port) : this.#output(port);
   }
 
   /** Lets cycles pass with the inputs as they are. */
@@ -122,7 +121,11 @@ export class Model {
     response?: Uint32Array,
     stride = this.inputWords,
   ): this {
-    this.#telling(() => this.#live.run(cycles, stimulus, stride, response));
+    for (const rows of [stimulus, response ?? stimulus]) {
+      if (rows instanceof Uint32Array) continue;
+      throw new TypeError(`expected rows in a Uint32Array, got ${shown(rows)}`);
+    }
+    this.#telling(() => this.#live.run(checkCycles(cycles), stimulus, stride, response));
     return this;
   }
 

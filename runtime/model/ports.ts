@@ -31,12 +31,32 @@ export class Ports {
   }
 
   /** An output port or an input port, undefined where the name is none of them. */
-  find(name: string): { readonly port: PortLayout; readonly isInput: boolean } | undefined {
+  find(name: string): FoundPort | undefined {
     const output = this.#outputs.get(name);
     if (output !== undefined) return { port: output, isInput: false };
     const input = this.#inputs.get(name);
     return input && { port: input, isInput: true };
   }
+
+  /** The same. Throws RangeError where the name is none of them. */
+  any(name: string): FoundPort {
+    const found = this.find(name);
+    if (found !== undefined) return found;
+    const all = listed(new Map([...this.#outputs, ...this.#inputs]));
+    throw new RangeError(`expected a port (${all}), got ${shown(name)}`);
+  }
+}
+
+/** A port, and which way it goes. */
+export interface FoundPort {
+  readonly port: PortLayout;
+  readonly isInput: boolean;
+}
+
+/** Checks a list of names. Throws TypeError for anything else. */
+export function checkNames(names: readonly string[]): readonly string[] {
+  if (Array.isArray(names)) return names;
+  throw new TypeError(`expected a list of port names, got ${shown(names)}`);
 }
 
 const byName = (ports: readonly PortLayout[]): Map<string, PortLayout> =>

@@ -51,8 +51,16 @@ interface NodeFiles {
   readFile(path: URL): Promise<Uint8Array<ArrayBuffer>>;
 }
 
+function absolute(address: string | URL): URL {
+  try {
+    return new URL(address, globalThis.location?.href);
+  } catch {
+    throw new TypeError(`expected a URL, such as one from import.meta.url, got ${shown(address)}`);
+  }
+}
+
 async function opened(address: string | URL): Promise<Response | BufferSource> {
-  const { href, protocol } = new URL(address, globalThis.location?.href);
+  const { href, protocol } = absolute(address);
   if (protocol === 'file:' && globalThis.process?.versions?.node) {
     const { readFile } = await nodeModule<NodeFiles>('fs/promises');
     return readFile(new URL(href));

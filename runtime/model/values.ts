@@ -99,5 +99,11 @@ export function shown(value: unknown): string {
   if (typeof value === 'bigint') return `bigint ${value}n`;
   if (typeof value === 'string') return `'${value.length > 80 ? `${value.slice(0, 80)}…` : value}'`;
   if (typeof value === 'number' || typeof value === 'boolean') return `${typeof value} ${value}`;
-  return value === null ? 'null' : typeof value;
+  return value == null ? `${value}` : Object.prototype.toString.call(value).slice(8, -1);
+}
+
+/** Checks what should be an object with named fields. Throws TypeError for anything else. */
+export function checkFields<T>(given: T, expected: string): T & object {
+  if (typeof given === 'object' && given !== null && !Array.isArray(given)) return given;
+  throw new TypeError(`expected ${expected}, got ${shown(given)}`);
 }

@@ -89,7 +89,35 @@ model.write({ few: 'x' });
 model.write({ go: 'z' });
 `;
 
+const names = `module names(input clk, input constructor, input [7:0] __proto__, input \\a"[3]*/ ,
+    output [39:0] toString, output then);
+  assign then = constructor, toString = __proto__ + \\a"[3]*/ ;
+endmodule`;
+
+// Members that all objects have are no values of ports.
+const namedTwice = `
+import { load, loadInWorker } from 'PACKAGE';
+
+const model = await load();
+model.write({}).write({ constructor: 1 }).write({ ['__proto__']: 3, 'a"[3]*/': 1 });
+model.runUntil({ then: 1 }, 3);
+model.run({ cycles: 1, stimulus: { 'a"[3]*/': Uint8Array.of(1) }, response: ['then'] });
+export const wide: bigint = model.read().toString;
+const worker = await loadInWorker();
+export const then: number = (await worker.read()).then;
+
+// @ts-expect-error
+model.write({ constructor: '1' });
+// @ts-expect-error
+model.write({ then: 1 });
+// @ts-expect-error
+model.runUntil({ toString: 1 }, 3);
+// @ts-expect-error
+model.run({ cycles: 1, stimulus: { constructor: [1] } });
+`;
+
 const root = packageFolder();
+const consumers = { mix: twoValued, mix3: threeValued, names: namedTwice };
 const tsc = fileURLToPath(new URL('../../node_modules/typescript/bin/tsc', import.meta.url));
 
 beforeAll(async () => {
@@ -97,10 +125,10 @@ beforeAll(async () => {
   const npmName = (name: string) => ({ npmName: { name, version: '1.0.0' } });
   await packInto(join(root, 'mix'), designOf(circuit), npmName('mix'));
   await packInto(join(root, 'mix3'), designOf(circuit, { threeValued: true }), npmName('mix3'));
+  await packInto(join(root, 'names'), designFrom(new Source('names.v', names)), npmName('names'));
   mkdirSync(join(root, 'node_modules'));
-  for (const name of ['mix', 'mix3']) {
+  for (const [name, text] of Object.entries(consumers)) {
     symlinkSync(join(root, name), join(root, 'node_modules', name));
-    const text = name === 'mix' ? twoValued : threeValued;
     writeFileSync(join(root, `${name}ByFile.mts`), text.replace('PACKAGE', `./${name}/model.mjs`));
     writeFileSync(join(root, `${name}ByName.mts`), text.replace('PACKAGE', name));
   }
@@ -113,7 +141,7 @@ describe('the types of a package', () => {
   ])(
     'take what is right and refuse what is wrong, in modules of %s',
     async (module, resolution) => {
-      const files = ['mix', 'mix3'].flatMap((n) => [`${n}ByFile.mts`, `${n}ByName.mts`]);
+      const files = Object.keys(consumers).flatMap((n) => [`${n}ByFile.mts`, `${n}ByName.mts`]);
       const options = ['--strict', '--noEmit', '--target', 'es2022', '--lib', 'es2022,dom'];
       const kind = ['--module', module, '--moduleResolution', resolution, '--types', ''];
       const args = [tsc, ...options, ...kind, '--exactOptionalPropertyTypes', ...files];

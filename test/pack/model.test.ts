@@ -402,18 +402,18 @@ describe('misuse', () => {
     [
       'an unknown port',
       (m) => m.read('bye'),
-      "expected an output (now, at, seen, full), got 'bye'",
+      "expected a port (now, at, seen, full, clear, by, far), got 'bye'",
     ],
     [
       'a net not kept',
       (m) => m.peek('nothing'),
       "expected a port or a kept net, got 'nothing'; see nets",
     ],
-    ['half a cycle', (m) => m.step(0.5), 'expected a count of cycles, got 0.5'],
+    ['half a cycle', (m) => m.step(0.5), 'expected a count of cycles, got number 0.5'],
     [
       'no limit',
       (m) => m.runUntil({ at: 1 }, Number.POSITIVE_INFINITY),
-      'expected a count of cycles, got Infinity',
+      'expected a count of cycles, got number Infinity',
     ],
     [
       'a short column',
@@ -443,10 +443,70 @@ describe('misuse', () => {
     expect(model.save()).toEqual(before);
   });
 
+  it.each<[string, (model: Awaited<ReturnType<ModelModule['load']>>) => unknown, string]>([
+    ['no values', (m) => m.write(null as never), 'expected values of inputs, got null'],
+    ['values in a list', (m) => m.write([1] as never), 'expected values of inputs, got Array'],
+    ['a text', (m) => m.write({ by: '3' }), "by takes a number (8 bits), got '3'"],
+    [
+      'no request',
+      (m) => m.run(undefined as never),
+      'expected a request such as { cycles: 1 }, got undefined',
+    ],
+    [
+      'columns that are none',
+      (m) => m.run({ cycles: 1, stimulus: 5 as never }),
+      'expected columns by port, got number 5',
+    ],
+    [
+      'one name for a list',
+      (m) => m.run({ cycles: 1, response: 'at' as never }),
+      "expected a list of port names, got 'at'",
+    ],
+    [
+      'no condition',
+      (m) => m.runUntil('at' as never, 3),
+      "expected values of outputs or a function, got 'at'",
+    ],
+    ['no rows', (m) => m.runRows(1, [1] as never), 'expected rows in a Uint32Array, got Array'],
+    [
+      'one name to listen to',
+      (m) => m.subscribe(() => {}, 'at' as never),
+      "expected a list of port names, got 'at'",
+    ],
+  ])('throws a TypeError for %s', async (_, act, message) => {
+    const model = await two.load();
+    const before = model.save();
+    expect(() => act(model)).toThrow(new TypeError(message));
+    expect(model.save()).toEqual(before);
+  });
+
+  it.each([-1, 2 ** 33, 1.5, Number.NaN])(
+    'throws a RangeError for %d as a value, and a state of cycles',
+    async (value) => {
+      const model = await two.load();
+      expect(() => model.write({ by: value })).toThrow(
+        new RangeError(`by takes 0 to 255, got number ${value}`),
+      );
+      expect(() => model.runUntil({ at: value }, 9)).toThrow(RangeError);
+      expect(() => model.write({ far: 2n ** 40n })).toThrow(
+        new RangeError('far takes 0 to 2n ** 40n - 1n, got bigint 1099511627776n'),
+      );
+      expect(model.read('by')).toBe(0);
+    },
+  );
+
+  it('throws for addresses that lead nowhere, and for seeds that are none', async () => {
+    await expect(two.load('model.wasm')).rejects.toThrow(
+      new TypeError("expected a URL, such as one from import.meta.url, got 'model.wasm'"),
+    );
+    const seed = 'a' as never;
+    await expect(two.load(undefined, { powerUp: 'random', seed })).rejects.toThrow(RangeError);
+  });
+
   it('throws a TypeError for kinds of columns, and for a model disposed of', async () => {
     const model = await two.load();
     expect(() => model.run({ cycles: 1, stimulus: { far: new Uint8Array(9) } })).toThrow(
-      new TypeError('far takes a Uint32Array, got object'),
+      new TypeError('far takes a Uint32Array, got Uint8Array'),
     );
     expect(() => model.write({ by: 1, far: 3 })).toThrow(TypeError);
     expect(model.read('by'), 'what came with a wrong value').toBe(0);
