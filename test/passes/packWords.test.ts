@@ -2,6 +2,8 @@ import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { powerUpState } from '../../compiler/circuit/powerUp.js';
 import { designOf, packedProgramsOf } from '../../compiler/compile.js';
+import type { Literal, Logic } from '../../compiler/logic/logic.js';
+import { LogicBuilder } from '../../compiler/logic/logicBuilder.js';
 import { growPacks } from '../../compiler/passes/packWords/growPacks.js';
 import { NO_NODE } from '../../compiler/passes/packWords/packs.js';
 import { breakCircles, stagesOf } from '../../compiler/passes/packWords/units.js';
@@ -59,6 +61,62 @@ describe('growPacks', () => {
       }),
       { seed: 11, numRuns: 60 },
     );
+  });
+});
+
+describe('growPacks on a large graph', () => {
+  const OPERATIONS = 24_000;
+  const INPUTS = 640;
+
+  /** Operation i reads what `reads` says of the values so far: the inputs, then the operations. */
+  function graph(reads: (i: number) => readonly [number, number], isAnd: (i: number) => boolean) {
+    const logic = new LogicBuilder({ share: false, fold: false, recover: false });
+    const values: Literal[] = Array.from({ length: INPUTS }, (_, i) => logic.input(i));
+    for (let i = 0; i < OPERATIONS; i++) {
+      const [p, q] = reads(i).map((at) => values[at]!) as [Literal, Literal];
+      values.push(isAnd(i) ? logic.and(p, logic.not(q)) : logic.xor(p, q));
+    }
+    const columns = logic.take();
+    return {
+      ...columns,
+      nodeCount: columns.op.length,
+      inputCount: INPUTS,
+      outputs: values.slice(-INPUTS),
+      ...{ next: [], states: [], updates: [], writes: [], faults: [] },
+    } satisfies Logic;
+  }
+
+  // Numerical Recipes' linear congruential generator.
+  function randomNumbers(): (below: number) => number {
+    let random = 1;
+    return (below) => {
+      random = (Math.imul(random, 1664525) + 1013904223) >>> 0;
+      return Math.floor((random / 2 ** 32) * below);
+    };
+  }
+
+  it('packs words', () => {
+    // Each step takes the word before and the same word turned by one bit.
+    const word = (i: number): number => i - (i % INPUTS);
+    const packs = growPacks(
+      graph(
+        (i) => [i, word(i) + ((i + 1) % INPUTS)],
+        (i) => (i / INPUTS) % 2 < 1,
+      ),
+    );
+    const packed = packs.packOf.filter((pack) => pack >= 0).length;
+    expect(packed).toBeGreaterThan(0.9 * OPERATIONS);
+  });
+
+  it('does not try where little repeats', () => {
+    const random = randomNumbers();
+    const packs = growPacks(
+      graph(
+        (i) => [random(INPUTS + i), random(INPUTS + i)],
+        () => random(2) === 0,
+      ),
+    );
+    expect(packs.count).toBe(0);
   });
 });
 

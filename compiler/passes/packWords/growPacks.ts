@@ -13,6 +13,16 @@ const LEAST_SEEDS = 6;
 /** Chains of copies are followed no further. */
 const MOST_STEPS = 1000;
 
+/**
+ * Graphs of more operations than this are packed only if at least `LEAST_REPEATED` of their
+ * operations may start a pack, by cones that look alike to `REPEATED_DEPTH`: of logic that is worth
+ * packing most may, and of a million gates at random a third, whose packs take ten seconds to be
+ * made and dissolved.
+ */
+const LARGE = 20_000;
+const LEAST_REPEATED = 0.4;
+const REPEATED_DEPTH = 8;
+
 /** How deep the cones of the nodes that start a pack must look alike, the best first. */
 const SEED_DEPTHS = [WHOLE_SHAPE, 12, 8, 5, 3, 2, 1];
 
@@ -23,10 +33,12 @@ const SEED_DEPTHS = [WHOLE_SHAPE, 12, 8, 5, 3, 2, 1];
  * Nodes whose cones look alike start packs, and each pack draws in what its nodes read, lane by lane
  * (superword-level parallelism: S. Larsen, S. Amarasinghe, "Exploiting superword level parallelism
  * with multimedia instruction sets", PLDI 2000, here over a graph of gates). State bits that are
- * drawn in find their places in the state that way. Which packs are worth it is decided later.
+ * drawn in find their places in the state that way. Which packs are worth it is decided later; for a
+ * large graph that repeats little, none is made.
  */
 export function growPacks(logic: Logic): Packs {
   const grower = new Grower(logic);
+  if (!grower.isPromising()) return grower.packs;
   for (const depth of SEED_DEPTHS) grower.growAlike(depth);
   grower.growStates();
   return grower.packs;
@@ -59,6 +71,17 @@ class Grower {
       this.#followers[source] ??= [];
       this.#followers[source].push(node);
     }
+  }
+
+  /** Whether packs may be worth the time to look for them. */
+  isPromising(): boolean {
+    const { op } = this.#logic;
+    const operations = op.reduce((count, each) => count + Number(each >= LogicOp.And), 0);
+    if (operations <= LARGE) return true;
+    const shape = this.#shapes[REPEATED_DEPTH]!;
+    const groups = seedGroups(this.packs, shape, this.#heights, LEAST_SEEDS);
+    const repeated = groups.reduce((count, { length }) => count + length, 0);
+    return repeated >= operations * LEAST_REPEATED;
   }
 
   /** Starts packs from nodes whose cones look alike to a depth, the highest first. */
