@@ -26,7 +26,7 @@ const text = (entry, outfile, plugins = []) =>
     bundle: true,
     minify: true,
     // Where an error is thrown, Node prints the whole line.
-    lineLimit: 250,
+    lineLimit: 500,
     format: 'esm',
     target: 'es2022',
     charset: 'utf8',

@@ -2,7 +2,9 @@ import { join } from 'node:path';
 import { setImmediate } from 'node:timers/promises';
 import { pathToFileURL } from 'node:url';
 import { RunFault } from '../../runtime/engine.js';
-import { type ModelLayout, type PortLayout, rowStride } from '../../runtime/layout.js';
+import { rowStride } from '../../runtime/layout.js';
+import { wordBytes } from '../../runtime/memoryState.js';
+import { toBase64 } from '../../runtime/model/base64.js';
 import { columnWords, type PlacedColumn, readRows } from '../../runtime/model/columns.js';
 import type * as packaged from '../../runtime/model/index.js';
 import { fillRandomRows, RandomBits } from '../../runtime/random.js';
@@ -13,6 +15,7 @@ import { ReferenceEngine } from '../interpret/reference/referenceEngine.js';
 import type { KeptNets } from './keptNets.js';
 import { withOutputs } from './probes.js';
 import type { ResetPort } from './resets.js';
+import { givenValue, memoryWord, textOf } from './values.js';
 
 /** What was compared before a package was written. */
 export interface PackageCheck {
@@ -126,6 +129,7 @@ class Comparison {
       this.#model.step();
       this.cycles++;
     }
+    this.#lookAtMemories();
   }
 
   /** Runs a block of cycles on typed arrays. */
@@ -240,6 +244,22 @@ class Comparison {
     }
   }
 
+  #lookAtMemories(): void {
+    const { layout } = this.#own;
+    if (layout.memories.length === 0) return;
+    const bytes = this.#reference.memoryState();
+    if (this.#model.save().memories !== toBase64(bytes)) this.#depart('memories', this.cycles);
+    for (const [i, { name, width, indices, from }] of this.#model.memories.entries()) {
+      const memory = layout.memories[i]!;
+      const last = from + (memory.depth - 1) * wordBytes(memory, layout.threeValued);
+      const word = indices.map(({ low, size }) => low + size - 1);
+      const text = `${name}${word.map((index) => `[${index}]`).join('')}`;
+      const expected = memoryWord(bytes, last, width, layout.threeValued);
+      const actual = textOf(this.#model.peek(text), width);
+      if (actual !== expected) this.#depart(text, this.cycles, expected, actual);
+    }
+  }
+
   #depart(name: string, cycle: number, expected?: string, actual?: string): never {
     const values = expected === undefined ? '' : `: it is ${actual}, expected ${expected}`;
     throw new PackageDeparture(
@@ -269,22 +289,3 @@ const emptyColumns = (
 
 const byName = (columns: readonly PlacedColumn[]) =>
   Object.fromEntries(columns.map(({ port, column }) => [port.name, column]));
-
-/** The value of a port in a row, as a caller writes it. */
-function givenValue(
-  { inputs, threeValued }: ModelLayout,
-  port: PortLayout,
-  row: Uint32Array,
-): number | bigint | string {
-  const text = formatValue(port, row, 0, threeValued ? inputs.words : undefined);
-  if (text.startsWith('0b') || text === 'x') return text;
-  return port.width <= 32 ? Number(text) : BigInt(text);
-}
-
-function textOf(value: number | bigint | string, width: number): string {
-  if (typeof value === 'string') return value;
-  return width === 1 ? `${value}` : hex(BigInt(value), width);
-}
-
-const hex = (value: bigint, width: number): string =>
-  `0x${value.toString(16).padStart(Math.ceil(width / 4), '0')}`;

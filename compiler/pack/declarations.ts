@@ -1,12 +1,17 @@
 import type { ModelLayout, PortLayout } from '../../runtime/layout.js';
-import type { KeptNet } from '../../runtime/model/description.js';
+import type { KeptMemory, KeptNet } from '../../runtime/model/description.js';
+import { rangesOf } from './keptMemories.js';
 import { declaredName } from './keptNets.js';
 
 /** Kept nets beyond this number are not written out as types. */
 const MOST_NETS = 1000;
 
 /** The text of `model.d.ts`: the interface of the package with the netlist's own names. */
-export function declarations(layout: ModelLayout, nets: readonly KeptNet[]): string {
+export function declarations(
+  layout: ModelLayout,
+  nets: readonly KeptNet[],
+  memories: readonly KeptMemory[],
+): string {
   const { name, threeValued, inputs, outputs, clocks } = layout;
   const isOfObjects = [...inputs.ports, ...outputs.ports].some((port) => port.name in {});
   const some = isOfObjects ? SOME : 'Partial';
@@ -25,7 +30,7 @@ ${ports('Outputs', 'What comes out.', outputs.ports, threeValued)}
 /** Every port by name. */
 export type Ports = Inputs & Outputs;
 
-${netTypes(nets, threeValued)}
+${netTypes(nets, memories, threeValued)}
 
 /** Clocks tick by themselves, once in each cycle: ${comment(clocks.join(', ') || 'there is none')}. */
 export type Clock = ${clocks.map((clock) => JSON.stringify(clock)).join(' | ') || 'never'};
@@ -47,8 +52,14 @@ function ports(
   return `/** ${purpose} */\nexport interface ${type} {\n${lines.join('\n')}${lines.length ? '\n' : ''}}`;
 }
 
-function netTypes(nets: readonly KeptNet[], threeValued: boolean): string {
-  const head = '/** State and kept nets, by full name, for `peek`. */\nexport interface Nets {\n';
+function netTypes(
+  nets: readonly KeptNet[],
+  memories: readonly KeptMemory[],
+  threeValued: boolean,
+): string {
+  const head =
+    '/** State, kept nets and words of memories, by full name, for `peek`. */\n' +
+    'export interface Nets {\n';
   if (nets.length > MOST_NETS) {
     return `${head}  [name: string]: ${valueType(1, threeValued)} | ${valueType(33, threeValued)};\n}`;
   }
@@ -57,7 +68,18 @@ function netTypes(nets: readonly KeptNet[], threeValued: boolean): string {
       `  /** ${comment(declaredName(net))} */\n` +
       `  ${JSON.stringify(net.name)}: ${valueType(net.width, threeValued)};\n`,
   );
-  return `${head}${lines.join('')}}`;
+  const words = memories.map(
+    ({ name, width, indices }) =>
+      `  /** ${comment(name)}: ${bits(width)} in a word, ${comment(rangesOf(indices))} */\n` +
+      `  [word: ${wordPattern(name, indices.length)}]: ${valueType(width, threeValued)};\n`,
+  );
+  return `${head}${lines.join('')}${words.join('')}}`;
+}
+
+/** The type of the names of a memory's words. */
+function wordPattern(name: string, indices: number): string {
+  const text = name.replace(/[\\`]|\$(?=\{)/g, '\\$&');
+  return `\`${text}${['[$', '{number}]'].join('').repeat(indices)}\``;
 }
 
 function valueType(width: number, threeValued: boolean): string {
@@ -106,6 +128,15 @@ export interface Net {
   readonly width: number;
   readonly msb: number;
   readonly lsb: number;
+}
+
+/** An array of words: \`peek\` shows them as \`NAME[INDEX]\`, with as many indices as it has. */
+export interface Memory {
+  readonly name: string;
+  /** Bits in a word. */
+  readonly width: number;
+  /** Outermost first: indices are low to low + size - 1. */
+  readonly indices: readonly { readonly low: number; readonly size: number }[];
 }
 
 /**
@@ -175,6 +206,7 @@ interface About {
   readonly inputs: readonly Port<keyof Inputs>[];
   readonly outputs: readonly Port<keyof Outputs>[];
   readonly nets: readonly Net[];
+  readonly memories: readonly Memory[];
   /** 32-bit words of a packed row${threeValued ? ': values, then which bits are x' : ''}. */
   readonly inputWords: number;
   readonly outputWords: number;
@@ -200,7 +232,7 @@ export interface Model extends About {
   runRows(cycles: number, stimulus: Uint32Array, response?: Uint32Array, stride?: number): this;
   /** Runs until outputs have these values, or the function returns true; at most \`limit\` cycles. */
   runUntil(condition: ${some}<Outputs> | ((model: this) => boolean), limit: number): Reached;
-  /** The value of a port, a register or a kept net. */
+  /** The value of a port, a register, a kept net or a word of a memory. */
   peek<Name extends keyof Ports | keyof Nets>(name: Name): (Ports & Nets)[Name];
   save(): SavedState;
   /** Goes to a saved state, given as an object or as JSON. */

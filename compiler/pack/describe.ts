@@ -12,6 +12,7 @@ import { powerUpState } from '../circuit/powerUp.js';
 import { X } from '../circuit/values.js';
 import { compile, type Design } from '../compile.js';
 import type { Emitter } from '../emit/emitter.js';
+import { keptMemories } from './keptMemories.js';
 import type { KeptNets } from './keptNets.js';
 import { compileProbes } from './probes.js';
 import { withSections } from './wasmSections.js';
@@ -33,6 +34,7 @@ export async function packedModule(
     initial: initialOf(design.circuit),
     patternLength: design.schedule.pattern.length,
     nets,
+    memories: keptMemories(design),
     ...(probing && { probes: withoutFolders(withoutBytes(probing), design.circuit) }),
   };
   const text = new TextEncoder().encode(JSON.stringify(folded(description)));

@@ -65,7 +65,8 @@ function blockLines(input: PortLayout | undefined, output: PortLayout | undefine
   ];
 }
 
-const quoted = (name: string): string =>
+/** A name as a text in JavaScript. */
+export const quoted = (name: string): string =>
   `'${name.replaceAll('\\', '\\\\').replaceAll("'", "\\'")}'`;
 
 /** A name as a property in an object literal, where `__proto__` alone would be something else. */

@@ -14,6 +14,7 @@ import { declarations } from './declarations.js';
 import { packedModule } from './describe.js';
 import { exampleText } from './example.js';
 import { netlistFingerprint, type ReadingOptions, sha256, sourceRecords } from './fingerprint.js';
+import { keptMemories } from './keptMemories.js';
 import { type KeepNames, keptNets } from './keptNets.js';
 import { manifestText } from './manifest.js';
 import { type NpmName, packageJsonText } from './packageJson.js';
@@ -86,6 +87,7 @@ async function fill(
   const { layout, circuit } = design;
   const { keepNames, npmName, version, reading, emitter = localEmitter() } = request;
   const kept = keptNets(design, keepNames);
+  const memories = keptMemories(design);
   const resets = resetPorts(circuit);
   const sources = sourceRecords(design);
   const netlist = netlistFingerprint(design, sources, reading);
@@ -101,7 +103,7 @@ async function fill(
     ['model.wasm', module],
     ['model.mjs', modelModule(identity, version)],
     ['worker.mjs', workerModule(identity, version)],
-    ['model.d.ts', declarations(layout, kept.nets)],
+    ['model.d.ts', declarations(layout, kept.nets, memories)],
     // TypeScript looks for the types of `model.mjs` under this name.
     ['model.d.mts', "export * from './model.js';\n"],
     ['example.mjs', example],
@@ -119,7 +121,8 @@ async function fill(
     files.set(name, content);
     folder.write(name, content);
   };
-  const facts = { layout, resets, nets: kept.nets, keepNames, paces: reading.clock ?? [] };
+  const { nets } = kept;
+  const facts = { layout, resets, nets, memories, keepNames, paces: reading.clock ?? [] };
   add('README.md', readmeText({ ...facts, example, printed, npmName: npmName?.name }));
   if (npmName)
     add('package.json', packageJsonText(npmName, layout.name, [...files.keys(), 'manifest.json']));

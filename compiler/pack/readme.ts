@@ -1,6 +1,7 @@
 import type { ModelLayout, PortLayout } from '../../runtime/layout.js';
-import type { KeptNet } from '../../runtime/model/description.js';
-import { key } from './example.js';
+import type { KeptMemory, KeptNet } from '../../runtime/model/description.js';
+import { key, quoted } from './example.js';
+import { rangesOf } from './keptMemories.js';
 import { declaredName, type KeepNames } from './keptNets.js';
 import type { ResetPort } from './resets.js';
 
@@ -9,6 +10,7 @@ export interface ReadmeFacts {
   readonly layout: ModelLayout;
   readonly resets: readonly ResetPort[];
   readonly nets: readonly KeptNet[];
+  readonly memories: readonly KeptMemory[];
   readonly keepNames: KeepNames;
   /** Clocks with a pace of their own. */
   readonly paces: readonly string[];
@@ -59,7 +61,7 @@ ${portSections(facts)}
 | \`model.step(n)\` | lets n cycles pass (1 unless given) |
 | \`model.run({ cycles, stimulus, response })\` | many cycles on typed arrays, one column a port |
 | \`model.runUntil({ ${sampleOutput(layout)}: … }, limit)\` | runs until outputs have these values, or a function says so |
-| \`model.peek(name)\` | looks at a register or a kept net inside |
+| \`model.peek(name)\` | looks at a register, a kept net or a word of a memory inside |
 | \`model.save()\`, \`model.restore(saved)\` | the whole state as plain data for JSON, and back |
 | \`model.reset()\` | back to power-up |
 | \`model.subscribe(listener, names)\` | tells which ports changed, after each call that changed some |
@@ -98,7 +100,7 @@ x in it is a text: \`'x'\` for one bit, else \`'0b'\` and all bits, the most sig
 for each bit that is x.
 `;
 
-function portSections({ layout, resets, nets, keepNames, paces }: ReadmeFacts): string {
+function portSections({ layout, resets, nets, memories, keepNames, paces }: ReadmeFacts): string {
   const { inputs, outputs, clocks } = layout;
   const clock =
     paces.length > 0 ? paces.join(', ') : clocks.map((name) => `\`${name}\``).join(', ');
@@ -113,7 +115,7 @@ ${
 } ${resetText(resets)}
 
 ${netText(nets, keepNames)}
-`;
+${memoryText(memories)}`;
 }
 
 function portTable(
@@ -151,6 +153,20 @@ function netText(nets: readonly KeptNet[], keepNames: KeepNames): string {
   return `\`peek\` shows ${what} (${nets.length}), by these names without the range: ${shown.join(', ')}${
     rest > 0 ? `, and ${rest} more in \`model.nets\`` : ''
   }.`;
+}
+
+function memoryText(memories: readonly KeptMemory[]): string {
+  const [first] = memories;
+  if (first === undefined) return '';
+  const list = memories.map(
+    ({ name, width, indices }) =>
+      `\`${cell(name)}\` (${width} bits in a word, ${rangesOf(indices)})`,
+  );
+  const word = `${first.name}${first.indices.map(({ low }) => `[${low}]`).join('')}`;
+  return `
+Memories: ${list.join(', ')}. \`model.peek(${quoted(word)})\` shows a word; \`reset\` gives them their
+first contents again, and a saved state has them all.
+`;
 }
 
 const cell = (name: string): string => name.replaceAll('|', '\\|').replaceAll('`', "'");

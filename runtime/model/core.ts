@@ -129,6 +129,11 @@ export class Core {
     return this.#state;
   }
 
+  /** The contents of all memories, as `ModelEngine.contents` has them. */
+  memories(): Uint8Array {
+    return this.#engine.contents;
+  }
+
   /** A row of values with the place of its x bits. */
   row(words: Uint32Array, group: { readonly words: number }): Row {
     return { words, at: 0, unknownAt: this.layout.threeValued ? group.words : undefined };

@@ -23,6 +23,16 @@ export interface KeptNet {
   readonly from: number | readonly number[];
 }
 
+/** A memory whose words can be looked at as `name[index]`, with as many indices as it has. */
+export interface KeptMemory {
+  readonly name: string;
+  readonly width: number;
+  /** The lowest index and the number of indices, outermost first; the last counts fastest. */
+  readonly indices: readonly { readonly low: number; readonly size: number }[];
+  /** Its first byte in `Engine.memoryState`. */
+  readonly from: number;
+}
+
 /** What travels inside `model.wasm` beside its code. */
 export interface ModelDescription {
   readonly format: typeof DESCRIPTION_FORMAT;
@@ -36,6 +46,7 @@ export interface ModelDescription {
   /** Cycles after which the clocks' pattern repeats. */
   readonly patternLength: number;
   readonly nets: readonly KeptNet[];
+  readonly memories: readonly KeptMemory[];
   /** Of the module that computes kept nets; absent where all of them are state. */
   readonly probes?: Omit<WasmModel, 'bytes'>;
 }

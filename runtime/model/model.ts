@@ -4,7 +4,7 @@ import { type BlockRequest, type BlockResult, BlockRun, checkCycles } from './bl
 import { type ChangeListener, Changes } from './changes.js';
 import { type OutputValues, type Reached, Search } from './condition.js';
 import type { Core } from './core.js';
-import type { KeptNet } from './description.js';
+import type { KeptMemory, KeptNet } from './description.js';
 import { Nets } from './nets.js';
 import { Ports } from './ports.js';
 import type { PowerUpOptions } from './powerUp.js';
@@ -67,6 +67,11 @@ export class Model {
   /** What `peek` takes beside the ports. */
   get nets(): readonly KeptNet[] {
     return this.#own.nets.list;
+  }
+
+  /** Whose words `peek` takes too, as `name[index]`. */
+  get memories(): readonly KeptMemory[] {
+    return this.#live.description.memories;
   }
 
   /** Gives inputs new values; those left out keep theirs. */
@@ -156,7 +161,7 @@ export class Model {
     });
   }
 
-  /** The value of a port or a kept net. */
+  /** The value of a port, a kept net or a word of a memory (`name[index]`). */
   peek(name: string): Value {
     const { ports, nets } = this.#own;
     return ports.find(name) ? this.read(name) : nets.peek(name);

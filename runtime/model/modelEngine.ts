@@ -69,7 +69,7 @@ export class ModelEngine {
     checkMemoryState(this.layout, memory);
     const [first] = this.#model.memory.areas;
     this.#bytes(first, bits.length).set(bits);
-    this.#contents.set(memory);
+    this.contents.set(memory);
     this.#exports.current.value = first;
     this.#exports.position.value = position;
   }
@@ -82,7 +82,12 @@ export class ModelEngine {
 
   /** As `Engine.memoryState`. */
   memoryState(): Uint8Array {
-    return this.#contents.slice();
+    return this.contents.slice();
+  }
+
+  /** What `memoryState` copies, as it stands: a view that any call may change or move. */
+  get contents(): Uint8Array {
+    return this.#bytes(this.#model.memory.contents, memoryStateBytes(this.layout));
   }
 
   /** What the next cycle would sample with a row of inputs. Nothing changes. Throws `RunFault`. */
@@ -96,7 +101,7 @@ export class ModelEngine {
       // A cycle writes to the other area only, so the one that it read is as it was.
       current.value = area;
       position.value = place;
-      if (contents !== undefined) this.#contents.set(contents);
+      if (contents !== undefined) this.contents.set(contents);
     }
   }
 
@@ -140,10 +145,6 @@ export class ModelEngine {
       const start = from + row * stride;
       memory.set(stimulus.subarray(start, start + words), at + row * words);
     }
-  }
-
-  get #contents(): Uint8Array {
-    return this.#bytes(this.#model.memory.contents, memoryStateBytes(this.layout));
   }
 
   #bytes(address: number, length: number): Uint8Array {

@@ -1,6 +1,6 @@
 import { formatValue } from '../valueText.js';
 import type { Core } from './core.js';
-import type { KeptNet } from './description.js';
+import type { KeptMemory, KeptNet } from './description.js';
 import { readValue, shown, type Value } from './values.js';
 
 /** Looks at kept nets by name. */
@@ -18,10 +18,25 @@ export class Nets {
   /** The value of a net at this moment. Throws RangeError for a name that was not kept. */
   peek(name: string): Value {
     const net = this.#byName.get(name);
-    if (net === undefined) {
-      throw new RangeError(`expected a port or a kept net, got ${shown(name)}; see nets`);
-    }
+    if (net === undefined) return this.#word(name);
     return typeof net.from === 'number' ? this.#probe(net, net.from) : this.#state(net, net.from);
+  }
+
+  // `name[index]`, or `name[index][index]` where there are several.
+  #word(text: string): Value {
+    const { layout, description } = this.#core;
+    for (const { name, width, indices, from } of description.memories) {
+      const word = text?.startsWith?.(name) ? wordOf(indices, text.slice(name.length)) : -1;
+      if (word < 0) continue;
+      const bytes = this.#core.memories();
+      const group = (width + 7) >>> 3;
+      const at = from + word * group * (layout.threeValued ? 2 : 1);
+      const bit = (i: number): number => (bytes[at + (i >>> 3)]! >>> (i & 7)) & 1;
+      const isUnknown = (i: number): boolean => layout.threeValued && bit(i + 8 * group) === 1;
+      return joined({ name, width }, (i) => (isUnknown(i) ? 2 : bit(i)));
+    }
+    const names = 'a port, a kept net or a word of a memory';
+    throw new RangeError(`expected ${names}, got ${shown(text)}; see nets and memories`);
   }
 
   #probe({ name, width }: KeptNet, offset: number): Value {
@@ -29,17 +44,33 @@ export class Nets {
     return readValue(this.#core.row(this.#core.probed(), group), { name, width, offset });
   }
 
-  #state({ name, width }: KeptNet, elements: readonly number[]): Value {
+  #state(net: KeptNet, elements: readonly number[]): Value {
     const state = this.#core.state();
-    const words = (width + 31) >>> 5;
-    const row = new Uint32Array(2 * words);
-    for (const [bit, element] of elements.entries()) {
-      const value = state[element]!;
-      if (value === 1) row[bit >>> 5]! |= 1 << (bit & 31);
-      if (value === 2) row[words + (bit >>> 5)]! |= 1 << (bit & 31);
-    }
-    return readValue({ words: row, at: 0, unknownAt: words }, { name, width, offset: 0 });
+    return joined(net, (bit) => state[elements[bit]!]!);
   }
+}
+
+/** The value that bits make, each 0, 1 or 2 for x. */
+function joined({ name, width }: Pick<KeptNet, 'name' | 'width'>, bit: (i: number) => number) {
+  const words = (width + 31) >>> 5;
+  const row = new Uint32Array(2 * words);
+  for (let i = 0; i < width; i++) {
+    const value = bit(i);
+    if (value > 0) row[(value - 1) * words + (i >>> 5)]! |= 1 << (i & 31);
+  }
+  return readValue({ words: row, at: 0, unknownAt: words }, { name, width, offset: 0 });
+}
+
+/** The word that a text of indices means, -1 where there is none. */
+function wordOf(indices: KeptMemory['indices'], text: string): number {
+  const given = text.match(/-?\d+/g) ?? [];
+  if (given.map((index) => `[${index}]`).join('') !== text || given.length !== indices.length) {
+    return -1;
+  }
+  return indices.reduce((word, { low, size }, i) => {
+    const element = Number(given[i]) - low;
+    return word < 0 || element < 0 || element >= size ? -1 : word * size + element;
+  }, 0);
 }
 
 /** A value as the tables of `clockstride run` write it: `0`, `1`, `x`, `0x…` or `0b…`. */

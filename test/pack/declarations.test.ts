@@ -12,6 +12,8 @@ import { packageFolder, packInto } from '../support/packages.js';
 const netlist = `module mix(input clk, input go, input [7:0] few, input [63:0] \\wide+1 ,
     output bit, output [31:0] word, output [127:0] block);
   reg [63:0] held;
+  reg [39:0] \\ra\`m [4:67];
+  always @(posedge clk) if (go) \\ra\`m [few[5:0]] <= held;
   always @(posedge clk) if (go) held <= \\wide+1 ;
   assign bit = held[0], word = held[31:0], block = {held, 56'd0, few};
 endmodule`;
@@ -25,6 +27,7 @@ const word: number = model.write({ go: 1, few: 3, 'wide+1': 5n }).step().read('w
 const block: bigint = model.read().block;
 const held: bigint = model.peek('held');
 const again: number = model.peek('few');
+const stored: bigint = model.peek('ra\`m[5]');
 const saved: SavedState = model.save();
 model.restore(saved).restore(JSON.stringify(saved)).reset();
 const { response } = model.run({ cycles: 2, stimulus: { few: new Uint8Array(2) }, response: ['word', 'bit'] });
@@ -38,7 +41,7 @@ await worker.run({ cycles: 9 }, { onProgress: (done) => void done, signal: Abort
 const clock: 'clk' = model.clocks[0]!;
 const failed = (error: unknown) => error instanceof RunFault && error.completed === word;
 if (failed(1)) end();
-export const all = [block, held, again, column, met, cycles, far, clock];
+export const all = [block, held, stored, again, column, met, cycles, far, clock];
 
 // @ts-expect-error
 model.write({ gone: 1 });
@@ -58,6 +61,10 @@ export const narrow: number = model.read('block');
 model.peek('hold');
 // @ts-expect-error
 response.block;
+// @ts-expect-error
+model.peek('ra\`m');
+// @ts-expect-error
+export const few: number = model.peek('ra\`m[5]');
 // @ts-expect-error
 model.run({ cycles: 1, unknown: {} });
 // @ts-expect-error

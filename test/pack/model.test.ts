@@ -247,30 +247,6 @@ describe('a saved state', () => {
   });
 });
 
-describe('a model with a memory', () => {
-  it('reads without writing, and takes the contents along in a saved state', async () => {
-    const text = `module ram(input clk, input we, input [9:0] at, input [31:0] d, output [31:0] q);
-      reg [31:0] mem [0:1023];
-      assign q = mem[at];
-      always @(posedge clk) if (we) mem[at] <= d;
-    endmodule`;
-    await packInto(join(root, 'ram'), designFrom(new Source('ram.v', text)));
-    const { load } = await importPackage(join(root, 'ram'));
-    const [one, other] = [await load(), await load()];
-    one.write({ we: 1, at: 700, d: 0xcafe });
-    expect([one.read('q'), one.read('q'), one.cycle]).toEqual([0, 0, 0]);
-    one.step().write({ we: 0, d: 0 });
-    expect(one.read('q')).toBe(0xcafe);
-    other.restore(JSON.stringify(one.save()));
-    expect(other.read('q')).toBe(0xcafe);
-    expect(other.reset().write({ at: 700 }).read('q')).toBe(0);
-    expect(one.step(3).read('q')).toBe(0xcafe);
-    await expect(load(undefined, { powerUp: 'one' })).rejects.toThrow(
-      'expected powerUp zero of a model with memories, got one',
-    );
-  });
-});
-
 describe('a model with x', () => {
   it('starts unknown and becomes known as a three-valued run does', async () => {
     const model = await three.load();
@@ -407,7 +383,7 @@ describe('misuse', () => {
     [
       'a net not kept',
       (m) => m.peek('nothing'),
-      "expected a port or a kept net, got 'nothing'; see nets",
+      "expected a port, a kept net or a word of a memory, got 'nothing'; see nets and memories",
     ],
     ['half a cycle', (m) => m.step(0.5), 'expected a count of cycles, got number 0.5'],
     [

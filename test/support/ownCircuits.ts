@@ -4,7 +4,7 @@ import { type Design, designOf } from '../../compiler/compile.js';
 import { Diagnostics, InputError } from '../../compiler/diagnostics/diagnostics.js';
 import { Source } from '../../compiler/diagnostics/source.js';
 import { createEngine, type EngineName } from '../../compiler/engines.js';
-import { readNetlist } from '../../compiler/read/readNetlist.js';
+import { type NetlistReadOptions, readNetlist } from '../../compiler/read/readNetlist.js';
 import type { Engine } from '../../runtime/engine.js';
 
 /** Reads the text of one of the project's own circuits; throws for anything the reader reports. */
@@ -15,9 +15,9 @@ export function ownDesign(name: string, parameters: Readonly<Record<string, numb
 }
 
 /** Reads a netlist into a design; throws for anything the reader reports. */
-export function designFrom(source: Source): Design {
+export function designFrom(source: Source, options: NetlistReadOptions = {}): Design {
   const diagnostics = new Diagnostics();
-  const circuit = readNetlist([source], {}, diagnostics);
+  const circuit = readNetlist([source], options, diagnostics);
   if (circuit === undefined || diagnostics.list.length > 0) throw new InputError(diagnostics.list);
   return designOf(circuit);
 }

@@ -3,7 +3,7 @@ import type { PortLayout } from '../../layout.js';
 import type { BlockRequest, BlockResult } from '../block.js';
 import type { ChangeListener } from '../changes.js';
 import type { OutputValues, Reached } from '../condition.js';
-import type { KeptNet } from '../description.js';
+import type { KeptMemory, KeptNet } from '../description.js';
 import type { SavedState } from '../savedState.js';
 import type { Value } from '../values.js';
 import { CANCELLED, type ErrorText, type Loaded, type Method, type Reply } from './protocol.js';
@@ -71,6 +71,10 @@ export class WorkerModel {
 
   get nets(): readonly KeptNet[] {
     return this.#about!.nets;
+  }
+
+  get memories(): readonly KeptMemory[] {
+    return this.#about!.memories;
   }
 
   get inputWords(): number {

@@ -1,5 +1,5 @@
 import type { PortLayout } from '../../layout.js';
-import type { KeptNet } from '../description.js';
+import type { KeptMemory, KeptNet } from '../description.js';
 import type { Value } from '../values.js';
 
 /** What the worker's side can be asked for. */
@@ -50,6 +50,7 @@ export interface Loaded {
   readonly inputs: readonly PortLayout[];
   readonly outputs: readonly PortLayout[];
   readonly nets: readonly KeptNet[];
+  readonly memories: readonly KeptMemory[];
   readonly inputWords: number;
   readonly outputWords: number;
 }

@@ -70,8 +70,8 @@ class Server {
   async load(_id: number, ...args: readonly unknown[]): Promise<Loaded> {
     const model = await load(...(args as Parameters<typeof load>));
     this.#model = model;
-    const { name, clocks, inputs, outputs, nets, inputWords, outputWords } = model;
-    return { name, clocks, inputs, outputs, nets, inputWords, outputWords };
+    const { name, clocks, inputs, outputs, nets, memories, inputWords, outputWords } = model;
+    return { name, clocks, inputs, outputs, nets, memories, inputWords, outputWords };
   }
 
   write(_id: number, values: unknown): void {
