@@ -114,6 +114,12 @@ export interface GateSink {
   writeMemory(memory: number, pins: WritePins): void;
 }
 
+/** A bit that may be z: it is `data` while `enable` is 1, and z while that is 0. */
+export interface FloatingBit {
+  readonly data: NetId;
+  readonly enable: NetId;
+}
+
 /** What all of one module's elaboration shares. */
 export interface Elaboration {
   readonly builder: GateSink;
@@ -123,6 +129,8 @@ export interface Elaboration {
   readonly budget: Budget;
   /** Value given to a net at power-up by `initial`, 0 or 1, collected before registers are made. */
   readonly initialValues: Map<NetId, 0 | 1>;
+  /** Lets a process drive a bit of a variable, which may be z; absent where no process is built. */
+  driveFloating?(net: NetId, bit: FloatingBit): void;
   /** Finds a data file named in the source at a position; undefined if there is none. */
   readData?(path: string, from: Position): Source | undefined;
   /**

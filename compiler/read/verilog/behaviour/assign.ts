@@ -1,9 +1,10 @@
 import type { NetId } from '../../../circuit/ids.js';
 import type { Position } from '../../../diagnostics/sourceMap.js';
 import type { Expression } from '../syntax.js';
-import { resize } from './bits.js';
 import type { Context } from './context.js';
 import { lowerAssigned } from './expressions.js';
+import { lowerFloating, mayFloat } from './floating.js';
+import { type FloatingBits, operandOf, resizeFloating } from './floatingBits.js';
 import { foldConstant } from './foldConstant.js';
 import { type HeldPlace, writeContents } from './heldMemory.js';
 import type { Bits } from './logic.js';
@@ -24,7 +25,10 @@ export function assignExpression(
   if (assignKnown(target, value, context, mode)) return;
   const pieces = targetPieces(target, 'variable', context);
   if (pieces === undefined) return;
-  writePieces(pieces, lowerAssigned(value, context, targetWidth(pieces)), context, mode);
+  const width = targetWidth(pieces);
+  if (context.access === 'all' && mayFloat(value, context)) {
+    writeFloating(pieces, lowerFloating(value, context, width), context, mode);
+  } else writePieces(pieces, lowerAssigned(value, context, width), context, mode);
 }
 
 /** Assigns a number to a variable, where both can be seen at once; that of a loop's index mostly. */
@@ -49,15 +53,15 @@ function assignKnown(
 /** Writes bits to a target, cut or extended to its width. */
 export function assignBits(
   target: Expression,
-  bits: Bits,
+  bits: FloatingBits,
   signed: boolean,
   context: Context,
   mode: WriteMode,
 ): void {
   const pieces = targetPieces(target, 'variable', context);
   if (pieces === undefined) return;
-  const fitted = resize(bits, targetWidth(pieces), signed, context.logic);
-  writePieces(pieces, fitted, context, mode);
+  const fitted = resizeFloating(bits, targetWidth(pieces), signed, context.logic);
+  writeFloating(pieces, fitted, context, mode);
 }
 
 /** The mode of a blocking assignment at a place. */
@@ -65,23 +69,41 @@ export function blockingAt(place: Position): WriteMode {
   return { blocking: true, place, isLoopIndex: false };
 }
 
+function writeFloating(
+  pieces: readonly Piece[],
+  bits: FloatingBits,
+  context: Context,
+  mode: WriteMode,
+): void {
+  const driven = bits.map(({ enable }) => enable);
+  const value = bits.map(({ data }) => data);
+  writePieces(pieces, value, context, mode, driven);
+}
+
+/** `driven`, if given, is 0 for the bits of the value that are z. */
 function writePieces(
   pieces: readonly Piece[],
   value: Bits,
   context: Context,
   mode: WriteMode,
+  driven?: Bits,
 ): void {
-  const { store, scope } = context;
+  const { store, scope, logic } = context;
+  // No memory holds z.
+  const asOperand = (data: NetId, i: number) => operandOf({ data, enable: driven![i]! }, logic);
   let start = 0;
   for (const { width, places } of pieces) {
     scope.shared.budget.spend((width >>> 3) * places.length);
     const word = places[0]?.word;
-    if (word !== undefined)
-      writeWord(word, places, value.slice(start, start + width), context, mode);
-    else {
+    if (word !== undefined) {
+      const bits = value.slice(start, start + width);
+      const held = driven === undefined ? bits : bits.map((data, i) => asOperand(data, start + i));
+      writeWord(word, places, held, context, mode);
+    } else {
       for (const { bits, when } of places) {
         bits.forEach((key, i) => {
-          if (key !== undefined) store.write(key, value[start + i]!, when, mode);
+          if (key !== undefined)
+            store.write(key, value[start + i]!, when, mode, driven?.[start + i]);
         });
       }
     }

@@ -7,7 +7,7 @@ import type { Context } from './context.js';
 import { lowerSelf } from './expressions.js';
 import { refuseHeld } from './heldMemory.js';
 import { refuse } from './names.js';
-import { freshRun } from './process.js';
+import { freshRun, runClocked } from './process.js';
 
 /** An edge of the event list and the net it is of. */
 interface EdgeNet {
@@ -20,7 +20,7 @@ interface EdgeNet {
 /** An asynchronous set or reset: what it makes of each bit that it does not leave alone. */
 export interface AsyncControl {
   readonly edge: EdgeNet;
-  readonly values: ReadonlyMap<NetId, Value>;
+  readonly values: ReadonlyMap<NetId, Value | 'z'>;
 }
 
 /** The clock and the asynchronous controls of an edge-sensitive process, first priority first. */
@@ -127,26 +127,25 @@ function valuesUnder(
   edge: EdgeNet,
   higher: readonly AsyncControl[],
   context: Context,
-): Map<NetId, Value> | Position {
+): Map<NetId, Value | 'z'> | Position {
   const { logic } = context;
   const fixed = fixedLevels(higher, context);
   fixed.set(edge.net, logic.constant(edge.level));
-  const { places } = context.store;
-  const run = freshRun(context, {
-    clocked: true,
-    outside: (net) => fixed.get(net) ?? net,
-    places,
-  });
-  run.services.execute(body, run);
+  const run = runClocked(body, context, { outside: (net) => fixed.get(net) ?? net });
   const [written] = run.store.finishWords().filter(({ when }) => logic.valueOf(when) !== 0);
   if (written !== undefined) refuseHeld(written, ASYNCHRONOUS, context);
-  const values = new Map<NetId, Value>();
+  const values = new Map<NetId, Value | 'z'>();
   for (const [key, entry] of run.store.finish()) {
     if (key < 0 || run.store.loopIndexes.has(key)) continue;
+    const isZ = entry.driven !== undefined && logic.valueOf(entry.driven) === 0;
+    if (isZ && logic.valueOf(entry.assigned) === 1) {
+      values.set(key, 'z');
+      continue;
+    }
     const result = run.store.resolve(key, entry);
     if (result === key) continue;
     const value = logic.valueOf(result);
-    if (value === undefined) return places.get(key)!;
+    if (value === undefined) return context.store.places.get(key)!;
     values.set(key, value);
   }
   return values;

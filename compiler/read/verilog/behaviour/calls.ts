@@ -5,6 +5,7 @@ import { knownOf, resize, unknownBits } from './bits.js';
 import type { CallExpression, Context, Exits, RoutineBinding } from './context.js';
 import { LATER, Sequence } from './exits.js';
 import { lowerAssigned } from './expressions.js';
+import type { FloatingBits } from './floatingBits.js';
 import { LocalScope } from './localScope.js';
 import { declareLocals, localVariable, rangeOfType } from './locals.js';
 import type { Bits } from './logic.js';
@@ -27,9 +28,12 @@ interface Argument {
 }
 
 /** The value of a function call: its body is executed at each call (clause 10.4). */
-export function callFunction(expression: CallExpression, context: Context): Bits {
-  if (isSystemName(expression.path, context)) return lowerSystemFunction(expression, context);
-  const failed = (): Bits => unknownBits(shapeOf(expression, context).width, context.logic);
+export function callFunction(expression: CallExpression, context: Context): FloatingBits {
+  const { logic } = context;
+  const known = (bits: Bits): FloatingBits => bits.map((data) => ({ data, enable: logic.one }));
+  if (isSystemName(expression.path, context))
+    return known(lowerSystemFunction(expression, context));
+  const failed = () => known(unknownBits(shapeOf(expression, context).width, logic));
   const routine = routineOf(expression, 'function', context);
   if (routine === undefined) return failed();
   const { syntax } = routine;
@@ -47,7 +51,7 @@ export function callFunction(expression: CallExpression, context: Context): Bits
   budget.enter(expression, 0);
   context.services.execute(syntax.body, inside);
   budget.leave();
-  const bits = result.nets.map((net) => context.store.read(net));
+  const bits = result.nets.map((net) => context.store.readFloating(net));
   context.store.forgetFrom(before);
   return bits;
 }
@@ -79,7 +83,7 @@ export function callTask(statement: TaskCall, context: Context): Exits | undefin
 function assignOutputs(given: readonly Argument[], statement: TaskCall, context: Context): void {
   given.forEach(({ direction, variable }, i) => {
     if (direction === 'input') return;
-    const bits = variable.nets.map((net) => context.store.read(net));
+    const bits = variable.nets.map((net) => context.store.readFloating(net));
     const target = statement.arguments[i]!;
     assignBits(target, bits, variable.signed, context, blockingAt(target.start));
   });

@@ -5,10 +5,11 @@ import type { Binding } from '../scope.js';
 import type { EventSyntax, Expression, Statement } from '../syntax.js';
 import type { Context } from './context.js';
 import { driveBit, driveIndex, placeOf } from './drive.js';
+import type { Entry } from './entries.js';
 import { refuseHeld } from './heldMemory.js';
 import { forEachName, plainMeaningOf } from './names.js';
 import { pathText, report } from './report.js';
-import type { Changes, Entry } from './store.js';
+import type { Changes } from './store.js';
 import { contains } from './walk.js';
 
 /**
@@ -29,16 +30,38 @@ export function lowerCombinational(
   const latched = new Map<NetId, Entry>();
   for (const [key, entry] of changes) {
     if (key < 0 || driveIndex(key, entry, context)) continue;
-    if (context.logic.valueOf(entry.assigned) === 1) driveBit(key, entry.value, context);
+    if (context.logic.valueOf(entry.assigned) === 1) driveEntry(key, entry, context);
     else if (context.logic.valueOf(entry.assigned) !== 0) latched.set(key, entry);
   }
-  for (const [key, { value, assigned }] of latched) {
-    placeOf(key, context);
-    const initial = context.scope.shared.initialValues.get(key);
-    const pins = { output: key, enable: assigned, data: value };
-    context.logic.sink.latch(initial === undefined ? pins : { ...pins, initial });
-  }
+  for (const [key, entry] of latched) buildLatch(key, entry, context);
   warnLatches(body, latched, changes.size, context);
+}
+
+function driveEntry(key: NetId, { value, driven }: Entry, context: Context): void {
+  if (driven === undefined) driveBit(key, value, context);
+  else {
+    placeOf(key, context);
+    context.scope.shared.driveFloating!(key, { data: value, enable: driven });
+  }
+}
+
+function buildLatch(key: NetId, { value, assigned, driven }: Entry, context: Context): void {
+  const { shared } = context.scope;
+  placeOf(key, context);
+  const { sink } = context.logic;
+  const initial = shared.initialValues.get(key);
+  const latch = (output: NetId, data: NetId, start: 0 | 1 | undefined): void => {
+    const pins = { output, enable: assigned, data };
+    sink.latch(start === undefined ? pins : { ...pins, initial: start });
+  };
+  if (driven === undefined) {
+    latch(key, value, initial);
+    return;
+  }
+  const held = { data: sink.net(), enable: sink.net() };
+  latch(held.data, value, initial);
+  latch(held.enable, driven, initial === undefined ? undefined : 1);
+  shared.driveFloating!(key, held);
 }
 
 const COMBINATIONAL = 'is written by a process without clock; write it at clock edges';

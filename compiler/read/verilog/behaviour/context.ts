@@ -2,6 +2,7 @@ import type { NetId } from '../../../circuit/ids.js';
 import type { NameId } from '../../names.js';
 import type { Binding, Scope } from '../scope.js';
 import type { Expression, Statement } from '../syntax.js';
+import type { FloatingBits } from './floatingBits.js';
 import type { Bits, Logic } from './logic.js';
 import type { Store } from './store.js';
 
@@ -31,7 +32,7 @@ export interface Services {
   /** A constant as a plain number; a diagnostic and undefined if it is none. */
   integer(expression: Expression, context: Context): number | undefined;
   /** The value of a function call, in the function's own width. */
-  call(expression: CallExpression, context: Context): Bits;
+  call(expression: CallExpression, context: Context): FloatingBits;
   /** Runs a statement on the context's store. */
   execute(statement: Statement, context: Context): Exits | undefined;
 }

@@ -1,7 +1,7 @@
 import { GateKind } from '../../../circuit/gates.js';
 import type { NetId } from '../../../circuit/ids.js';
 import type { Context } from './context.js';
-import type { Entry } from './store.js';
+import type { Entry } from './entries.js';
 
 const constantKinds = [GateKind.Zero, GateKind.One, GateKind.Unknown] as const;
 

@@ -4,6 +4,7 @@ import { invert, negate } from './arithmetic.js';
 import { bitsOf, hasUnknown, resize, unknownBits } from './bits.js';
 import { isTrue } from './compare.js';
 import type { Context } from './context.js';
+import { operandOf } from './floatingBits.js';
 import { foldSelf } from './foldConstant.js';
 import type { Bits } from './logic.js';
 import { bindingOf, refuse } from './names.js';
@@ -93,7 +94,7 @@ function lowerOwn(
     case 'string':
       return lowerString(expression, context);
     case 'call':
-      return context.services.call(expression, context);
+      return context.services.call(expression, context).map((bit) => operandOf(bit, context.logic));
     case 'real':
       refuse(context, expression, 'a real number has no bits; use a whole number');
       return unknownBits(1, context.logic);

@@ -2,6 +2,8 @@ import type { NetId } from '../../../circuit/ids.js';
 import type { Constant, Scope } from '../scope.js';
 import type { Expression } from '../syntax.js';
 import { lowerAssigned, lowerSelf } from './expressions.js';
+import { lowerFloating, mayFloat } from './floating.js';
+import type { FloatingBits } from './floatingBits.js';
 import { expressionContext, withConstants } from './process.js';
 import { realConstant } from './realConstant.js';
 import { report } from './report.js';
@@ -41,6 +43,22 @@ export function lowerExpression(
   return targetWidth === undefined
     ? [...lowerSelf(expression, context)]
     : [...lowerAssigned(expression, context, targetWidth)];
+}
+
+/**
+ * The bits of an expression that may be z, as the right side of an assignment to `targetWidth`
+ * bits; undefined for an expression that never is. See `lowerFloating`.
+ */
+export function lowerIfFloating(
+  expression: Expression,
+  scope: Scope,
+  targetWidth: number,
+): FloatingBits | undefined {
+  scope.shared.budget.begin(expression);
+  const context = expressionContext(scope);
+  return mayFloat(expression, context)
+    ? lowerFloating(expression, context, targetWidth)
+    : undefined;
 }
 
 /**

@@ -1,6 +1,7 @@
 import type { NetId } from '../../../circuit/ids.js';
 import type { Value } from '../../../circuit/values.js';
 import type { Elaboration, Scope } from '../scope.js';
+import type { Statement } from '../syntax.js';
 import { callFunction } from './calls.js';
 import { constantSink } from './constantSink.js';
 import type { Context, Services } from './context.js';
@@ -45,6 +46,19 @@ export function expressionContext(scope: Scope): Context {
 /** The same process once more, from the start, with the gates made so far at hand. */
 export function freshRun(context: Context, options: StoreOptions): Context {
   return { ...context, store: new Store(context.logic, options), blocks: new Map() };
+}
+
+/** Executes the body of a clocked process; the result has its store. */
+export function runClocked(body: Statement, context: Context, options: StoreOptions): Context {
+  const { places } = context.store;
+  const run = (more: StoreOptions): Context => {
+    const fresh = freshRun(context, { clocked: true, places, ...options, ...more });
+    fresh.services.execute(body, fresh);
+    return fresh;
+  };
+  const first = run({});
+  const composed = first.store.composedBits();
+  return composed.size === 0 ? first : run({ composed });
 }
 
 /** Contexts for constants, one for each that is being worked out inside of another. */

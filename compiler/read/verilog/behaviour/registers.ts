@@ -1,12 +1,13 @@
 import { Edge, Priority } from '../../../circuit/circuit.js';
 import type { NetId } from '../../../circuit/ids.js';
+import type { Value } from '../../../circuit/values.js';
 import type { EventSyntax, Statement } from '../syntax.js';
 import { type AsyncControl, type Controls, findControls, fixedLevels } from './asyncControls.js';
 import type { Context } from './context.js';
 import { driveIndex, placeOf } from './drive.js';
+import type { Entry } from './entries.js';
 import type { Logic } from './logic.js';
-import { freshRun } from './process.js';
-import type { Entry } from './store.js';
+import { runClocked } from './process.js';
 import { joinedWrites } from './wordWrites.js';
 
 /** Turns an edge-sensitive `always` into registers (IEEE 1364.1-2002, clause 5.2). */
@@ -21,12 +22,7 @@ export function lowerClocked(
   const fixed = fixedLevels(controls.asynchronous, context);
   // Statements run after the edge; the register's data is what it was before.
   fixed.set(net, context.logic.constant(level));
-  const run = freshRun(context, {
-    clocked: true,
-    outside: (net) => fixed.get(net) ?? net,
-    places: context.store.places,
-  });
-  run.services.execute(body, run);
+  const run = runClocked(body, context, { outside: (net) => fixed.get(net) ?? net });
   const changes = run.store.finish();
   for (const [key, entry] of changes) {
     if (key >= 0 && !driveIndex(key, entry, run)) {
@@ -65,16 +61,49 @@ function buildRegister(
   controls: Controls,
   run: Context,
 ): void {
-  const { logic } = run;
-  const { clock, asynchronous } = controls;
-  const { set, reset, priority, holding } = asyncPins(key, asynchronous, logic);
+  const { store, logic, scope } = run;
+  const { initialValues } = scope.shared;
   placeOf(key, run);
-  const initial = run.scope.shared.initialValues.get(key);
+  const initial = initialValues.get(key);
+  const values = controls.asynchronous.map(({ values: all }) => all.get(key));
+  if (entry?.driven === undefined && !values.includes('z')) {
+    const own = entry === undefined ? key : store.own(key);
+    addRegister({ output: key, own, entry, initial, values }, controls, logic);
+    return;
+  }
+  // Two registers: one for the value, one for whether it is not z.
+  const held = { data: logic.sink.net(), enable: logic.sink.net() };
+  const { data, enable } = held;
+  addRegister({ output: data, own: data, entry, initial, values }, controls, logic);
+  const driven = entry && { value: entry.driven ?? logic.one, assigned: entry.assigned };
+  const levels = values.map((value) => (value === undefined ? value : value === 'z' ? 0 : 1));
+  const start = initial === undefined ? initial : 1;
+  const shared = { entry: driven, initial: start, values: levels } as const;
+  addRegister({ output: enable, own: enable, ...shared }, controls, logic);
+  scope.shared.driveFloating!(key, held);
+}
+
+/** A register apart from its clock. */
+interface RegisterPlan {
+  readonly output: NetId;
+  /** Its value before the edge. */
+  readonly own: NetId;
+  readonly entry: Entry | undefined;
+  readonly initial: 0 | 1 | undefined;
+  /** What each asynchronous control makes of it. */
+  readonly values: readonly AsyncValue[];
+}
+
+type AsyncValue = Value | 'z' | undefined;
+
+function addRegister(plan: RegisterPlan, { clock, asynchronous }: Controls, logic: Logic): void {
+  const { output, entry, initial } = plan;
+  const { set, reset, priority, holding } = asyncPins(plan.values, asynchronous, logic);
   logic.sink.register({
-    output: key,
+    output,
     clock: clock.net,
     edge: clock.level === 1 ? Edge.Rising : Edge.Falling,
-    data: entry === undefined ? key : dataOf(key, entry, holding, run),
+    data: entry === undefined ? output : dataOf(plan, entry, holding, logic),
     priority,
     ...(logic.valueOf(set) !== 0 && { set }),
     ...(logic.valueOf(reset) !== 0 && { reset }),
@@ -82,10 +111,14 @@ function buildRegister(
   });
 }
 
-function dataOf(key: NetId, entry: Entry, holding: NetId, { store, logic }: Context): NetId {
-  const { value, assigned } = entry;
-  if (logic.valueOf(assigned) === 1) return logic.mux(holding, value, key);
-  return store.resolve(key, { value, assigned: logic.and(assigned, logic.not(holding)) });
+function dataOf(
+  { output, own }: RegisterPlan,
+  { value, assigned }: Entry,
+  holding: NetId,
+  logic: Logic,
+): NetId {
+  if (logic.valueOf(assigned) === 1) return logic.mux(holding, value, output);
+  return logic.mux(logic.and(assigned, logic.not(holding)), own, value);
 }
 
 interface AsyncPins {
@@ -96,29 +129,33 @@ interface AsyncPins {
   readonly holding: NetId;
 }
 
-// First priority first. A bit set to x may become anything, so it is reset.
-function asyncPins(key: NetId, controls: readonly AsyncControl[], logic: Logic): AsyncPins {
+// First priority first. A bit set to x or z may become anything, so it is reset.
+function asyncPins(
+  values: readonly AsyncValue[],
+  controls: readonly AsyncControl[],
+  logic: Logic,
+): AsyncPins {
   const sets: NetId[] = [];
   const resets: NetId[] = [];
   let holding = logic.zero;
   let before = logic.zero;
-  const exclusive = changesBack(key, controls);
-  for (const { edge, values } of controls) {
+  const exclusive = changesBack(values);
+  for (const [i, { edge }] of controls.entries()) {
     const active = edge.level === 1 ? edge.net : logic.not(edge.net);
-    const value = values.get(key);
+    const value = values[i];
     const blocked = exclusive ? before : holding;
     const effective = logic.and(active, logic.not(blocked));
     if (value === undefined) holding = logic.or(holding, effective);
     else (value === 1 ? sets : resets).push(effective);
     before = logic.or(before, active);
   }
-  const first = controls.find(({ values }) => values.has(key));
-  const priority = first?.values.get(key) === 1 ? Priority.SetWins : Priority.ResetWins;
+  const first = values.find((value) => value !== undefined);
+  const priority = first === 1 ? Priority.SetWins : Priority.ResetWins;
   return { set: logic.any(sets), reset: logic.any(resets), priority, holding };
 }
 
 // Set, reset and set again in order of priority: no single priority tells which of the two wins.
-function changesBack(key: NetId, controls: readonly AsyncControl[]): boolean {
-  const values = controls.flatMap(({ values: all }) => (all.has(key) ? [all.get(key) === 1] : []));
-  return values.filter((value, i) => i > 0 && value !== values[i - 1]).length > 1;
+function changesBack(values: readonly AsyncValue[]): boolean {
+  const sets = values.filter((value) => value !== undefined).map((value) => value === 1);
+  return sets.filter((value, i) => i > 0 && value !== sets[i - 1]).length > 1;
 }

@@ -1,16 +1,11 @@
 import { type NetId, netId } from '../../../circuit/ids.js';
 import type { Position } from '../../../diagnostics/sourceMap.js';
-import type { HeldMemory } from '../scope.js';
+import type { FloatingBit, HeldMemory } from '../scope.js';
+import { type Entry, eitherEntry, overEntry, tableEntry } from './entries.js';
+import { chosenBit, operandOf } from './floatingBits.js';
 import { KnownWords } from './knownWords.js';
 import type { Bits, Logic } from './logic.js';
-import { selectFrom } from './tables.js';
 import { eitherWrites, tableWrites, type WordWrite } from './wordWrites.js';
-
-/** What was assigned to one bit: a value, and the condition under which it was. */
-export interface Entry {
-  readonly value: NetId;
-  readonly assigned: NetId;
-}
 
 /** Bits and what was assigned to them. */
 export type Changes = Map<NetId, Entry>;
@@ -30,6 +25,11 @@ export interface StoreOptions {
   readonly outside?: (net: NetId) => NetId;
   /** Whether an unassigned variable keeps its value in a register, so that own values are free. */
   readonly clocked?: boolean;
+  /**
+   * Variables whose register is not all that tells their value: those assigned z, or in both ways.
+   * `clocked` does not hold for them.
+   */
+  readonly composed?: ReadonlySet<NetId>;
   /** Where bits were assigned, shared with other runs of the same process. */
   readonly places?: Map<NetId, Position>;
 }
@@ -73,6 +73,8 @@ export class Store {
   /** Variables assigned a number, outside of any branch; they go before `#layers`. */
   readonly #words = new KnownWords();
   #nextLocal = -1;
+  /** Whether anything assigned may be z. */
+  #floats = false;
 
   constructor(logic: Logic, options: StoreOptions = {}) {
     this.logic = logic;
@@ -93,6 +95,7 @@ export class Store {
       if (set.size > 0) set.clear();
     }
     this.aborted = false;
+    this.#floats = false;
   }
 
   /** A new bit of a local variable. */
@@ -121,6 +124,26 @@ export class Store {
     return entry === undefined ? this.own(key) : this.resolve(key, entry);
   }
 
+  /** Whether anything assigned so far may be z. */
+  get mayFloatAtAll(): boolean {
+    return this.#floats;
+  }
+
+  /** Whether a bit may be z as blocking assignments have left it. */
+  mayFloat(key: NetId): boolean {
+    return this.#floats && this.#find(key, 'now')?.driven !== undefined;
+  }
+
+  /** As `read`, with z apart from the value. */
+  readFloating(key: NetId): FloatingBit {
+    const { one } = this.logic;
+    const entry = this.#floats ? this.#find(key, 'now') : undefined;
+    if (entry?.driven === undefined) return { data: this.read(key), enable: one };
+    const before = { data: this.own(key), enable: one };
+    const bit = { data: entry.value, enable: entry.driven };
+    return chosenBit(entry.assigned, before, bit, this.logic);
+  }
+
   /** The value a bit has when the process assigns it nothing. */
   own(key: NetId): NetId {
     if (key < 0) return this.logic.unknown;
@@ -130,8 +153,11 @@ export class Store {
 
   /** The value of a bit after an assignment that may have been made or not. */
   resolve(key: NetId, entry: Entry): NetId {
-    if (this.logic.valueOf(entry.assigned) === 1) return entry.value;
-    return this.logic.mux(entry.assigned, this.own(key), entry.value);
+    const { value, assigned, driven } = entry;
+    const bit =
+      driven === undefined ? value : operandOf({ data: value, enable: driven }, this.logic);
+    if (this.logic.valueOf(assigned) === 1) return bit;
+    return this.logic.mux(assigned, this.own(key), bit);
   }
 
   /** The value of a variable that was assigned a number; undefined where only its bits tell. */
@@ -174,12 +200,12 @@ export class Store {
     }
   }
 
-  /** Assigns a bit where `when` is 1. */
-  write(key: NetId, value: NetId, when: NetId, write: WriteMode): void {
+  /** Assigns a bit where `when` is 1; it becomes z where `driven`, if given, is 0. */
+  write(key: NetId, value: NetId, when: NetId, write: WriteMode, driven = this.logic.one): void {
     this.#spread(key);
     if (key >= 0) this.#note(key, write);
     const kind = write.blocking ? 'now' : 'later';
-    const entry = this.#entry(value);
+    const entry = this.#entry(value, driven);
     const isSure = when === this.logic.one;
     const result = isSure ? entry : this.#choose(key, when, entry, this.#find(key, kind));
     this.#top[kind].set(key, result);
@@ -196,9 +222,13 @@ export class Store {
   }
 
   /** The entry of an assignment that is surely made: the same one for the same constant. */
-  #entry(value: NetId): Entry {
+  #entry(value: NetId, driven = this.logic.one): Entry {
     const { logic } = this;
     const assigned = logic.one;
+    if (driven !== assigned) {
+      this.#floats = true;
+      return { value, assigned, driven };
+    }
     const constant = value === assigned ? 1 : value === logic.zero ? 0 : -1;
     if (constant < 0) return { value, assigned };
     this.#constants[constant] ??= { value, assigned };
@@ -273,10 +303,7 @@ export class Store {
     };
     const changes = this.#combined(branches, (_, entries) => {
       const picked = index.map((i) => entries[i]);
-      return {
-        value: selectFrom(select, (i) => picked[i]?.value, this.logic)!,
-        assigned: selectFrom(select, (i) => picked[i]?.assigned ?? this.logic.zero, this.logic)!,
-      };
+      return tableEntry(select, picked, this.logic);
     });
     return { ...changes, nowWords: words('nowWords'), laterWords: words('laterWords') };
   }
@@ -288,9 +315,19 @@ export class Store {
     const changes = new Map(now);
     for (const [key, entry] of later) {
       const before = now.get(key);
-      changes.set(key, before === undefined ? entry : this.#over(entry, before));
+      changes.set(key, before === undefined ? entry : overEntry(entry, before, this.logic));
     }
     return changes;
+  }
+
+  /** The variables that are to be `composed` if the process is executed once more. */
+  composedBits(): ReadonlySet<NetId> {
+    const { now, later } = this.#top;
+    const bits = new Set<NetId>();
+    for (const [key, { driven }] of [...now, ...later]) {
+      if (key >= 0 && (driven !== undefined || (now.has(key) && later.has(key)))) bits.add(key);
+    }
+    return bits;
   }
 
   get #top(): OpenBranch {
@@ -325,29 +362,26 @@ export class Store {
   #choose(key: NetId, condition: NetId, one: Entry | undefined, zero: Entry | undefined): Entry {
     const { logic } = this;
     if (zero === undefined) {
-      return { value: one!.value, assigned: logic.and(condition, one!.assigned) };
+      return { ...one!, assigned: logic.and(condition, one!.assigned) };
     }
     if (one === undefined) {
-      return { value: zero.value, assigned: logic.and(logic.not(condition), zero.assigned) };
+      return { ...zero, assigned: logic.and(logic.not(condition), zero.assigned) };
     }
     const always = (entry: Entry): boolean => logic.valueOf(entry.assigned) === 1;
     // With the register's own value at hand, a complete branch beside an incomplete one makes the
     // result complete, which takes fewer gates than a condition beside the value.
-    if (this.#options.clocked && key >= 0 && always(one) !== always(zero)) {
+    if (this.#mayComplete(key, one, zero) && always(one) !== always(zero)) {
       const value = logic.mux(condition, this.resolve(key, zero), this.resolve(key, one));
       return { value, assigned: logic.one };
     }
-    return {
-      value: logic.mux(condition, zero.value, one.value),
-      assigned: logic.mux(condition, zero.assigned, one.assigned),
-    };
+    const assigned = logic.mux(condition, zero.assigned, one.assigned);
+    return eitherEntry(condition, zero, one, assigned, logic);
   }
 
-  #over(entry: Entry, before: Entry): Entry {
-    return {
-      value: this.logic.mux(entry.assigned, before.value, entry.value),
-      assigned: this.logic.or(entry.assigned, before.assigned),
-    };
+  #mayComplete(key: NetId, one: Entry, zero: Entry): boolean {
+    if (!this.#options.clocked || key < 0) return false;
+    if (one.driven !== undefined || zero.driven !== undefined) return false;
+    return this.#options.composed?.has(key) !== true;
   }
 }
 

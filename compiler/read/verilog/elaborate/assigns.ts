@@ -1,10 +1,11 @@
 import { PartKind } from '../../../circuit/busParts.js';
 import { GateKind } from '../../../circuit/gates.js';
-import { type NetId, NO_NET } from '../../../circuit/ids.js';
+import { NO_NET } from '../../../circuit/ids.js';
 import {
   evaluateConstant,
   lowerAlways,
   lowerExpression,
+  lowerIfFloating,
   lowerInitial,
   lowerTarget,
 } from '../behaviour/index.js';
@@ -12,8 +13,7 @@ import type { Expression } from '../syntax.js';
 import type { BlockScope } from './blockScope.js';
 import type { Located, ModuleBody } from './body.js';
 import { forEachTarget } from './expressions.js';
-import { type FloatingBit, lowerFloating, mayFloat } from './floating.js';
-import { type Strengths, strengthsOf } from './strengths.js';
+import { strengthsOf } from './strengths.js';
 import { ensureDeclared } from './terminals.js';
 
 /** Declares the nets that only the left side of an `assign` names (clause 4.5). */
@@ -56,10 +56,10 @@ function lowerAssign(
   const targets = lowerTarget(target, scope);
   if (targets === undefined) return;
   const strengths = strengthsOf(strength);
-  if (mayFloat(value)) {
-    const bits = lowerFloating(value, scope, targets.length);
+  const floating = lowerIfFloating(value, scope, targets.length);
+  if (floating !== undefined) {
     body.buildAt(start);
-    for (const [bit, net] of targets.entries()) driveFloating(body, net, bits[bit]!, strengths);
+    for (const [bit, net] of targets.entries()) body.addFloating(net, floating[bit]!, strengths);
     return;
   }
   const values = lowerExpression(value, scope, targets.length);
@@ -74,23 +74,6 @@ function lowerAssign(
     }
     if (isCopy) body.copies.push(builder.driverCount);
     builder.drive(net, GateKind.Buf, [values[bit]!]);
-  }
-}
-
-/** Drives a bit that is z while its enable is 0. */
-function driveFloating(
-  { builder, copies }: ModuleBody,
-  net: NetId,
-  { data, enable }: FloatingBit,
-  strengths: Strengths | undefined,
-): void {
-  const kind = builder.kindOf(enable);
-  if (kind === GateKind.Zero) return;
-  if (builder.isDeclared(data)) copies.push(builder.driverCount);
-  if (kind === GateKind.One && strengths === undefined) builder.drive(net, GateKind.Buf, [data]);
-  else {
-    const control = kind === GateKind.One ? NO_NET : enable;
-    builder.busPart(net, data, control, { kind: PartKind.Driver, ...strengths });
   }
 }
 

@@ -1,5 +1,7 @@
+import { PartKind } from '../../../circuit/busParts.js';
+import { GateKind } from '../../../circuit/gates.js';
 import { GrowableUint32 } from '../../../circuit/growable.js';
-import type { NetId } from '../../../circuit/ids.js';
+import { type NetId, NO_NET } from '../../../circuit/ids.js';
 import { depthOf } from '../../../circuit/memory.js';
 import type { DiagnosticCode } from '../../../diagnostics/codes.js';
 import type { Diagnostic, Diagnostics } from '../../../diagnostics/diagnostics.js';
@@ -8,7 +10,7 @@ import type { Position, SourceMap } from '../../../diagnostics/sourceMap.js';
 import type { NameId, NameTable } from '../../names.js';
 import { REGISTER_LIMIT } from '../behaviour/memorySelect.js';
 import { type Budget, tooLarge } from '../budget.js';
-import type { Binding, HeldMemory } from '../scope.js';
+import type { Binding, FloatingBit, HeldMemory } from '../scope.js';
 import type { Expression, Item, ModuleSyntax, Strength } from '../syntax.js';
 import { BlockScope } from './blockScope.js';
 import { Children } from './children.js';
@@ -18,6 +20,7 @@ import { wordSpan } from './messages.js';
 import { NeedsRegisters } from './needsRegisters.js';
 import { bindingAbove, type Outer, type OuterHost } from './outer.js';
 import { Recording } from './recording.js';
+import type { Strengths } from './strengths.js';
 import { SymbolKind, type SymbolTable } from './symbols.js';
 import type { TemplatePort } from './template.js';
 
@@ -86,6 +89,9 @@ export class ModuleBody implements OuterHost {
   /** Drivers of the recording that hand on a net as it is: z too, where that net is a bus. */
   readonly copies = new GrowableUint32(2);
 
+  /** Variables that a process drives in part, once for each process. */
+  readonly floatingVariables: NetId[] = [];
+
   /** Inputs of instances that nothing is connected to. */
   readonly openInputs: OpenInput[] = [];
   /** Places an instance before its turn, for a name that leads into it. */
@@ -147,6 +153,24 @@ export class ModuleBody implements OuterHost {
   readData(path: string, from: Position): Source | undefined {
     const { source } = this.sources.span(from);
     return this.design.readInclude?.(path, source);
+  }
+
+  driveFloating(net: NetId, bit: FloatingBit): void {
+    this.floatingVariables.push(net);
+    this.addFloating(net, bit);
+  }
+
+  /** Adds a driver to a net that is z while its enable is 0. */
+  addFloating(net: NetId, { data, enable }: FloatingBit, strengths?: Strengths): void {
+    const { builder, copies } = this;
+    const kind = builder.kindOf(enable);
+    if (kind === GateKind.Zero) return;
+    if (builder.isDeclared(data)) copies.push(builder.driverCount);
+    if (kind === GateKind.One && strengths === undefined) builder.drive(net, GateKind.Buf, [data]);
+    else {
+      const control = kind === GateKind.One ? NO_NET : enable;
+      builder.busPart(net, data, control, { kind: PartKind.Driver, ...strengths });
+    }
   }
 
   needRegisters(memory: HeldMemory): void {

@@ -5,7 +5,7 @@ import type { BlockScope } from './blockScope.js';
 import type { ModuleBody } from './body.js';
 import { isWired, type NetClasses } from './defaults.js';
 import { wordSpan } from './messages.js';
-import { BUS_PART, type Origin } from './recording.js';
+import { BUS_PART, DROPPED, type Origin } from './recording.js';
 import { NetClass } from './symbols.js';
 import { Drive } from './template.js';
 import type { Usage } from './usage.js';
@@ -21,16 +21,36 @@ export function checkConflicts(body: ModuleBody, usage: Usage, classes: NetClass
       conflicts.set(net, isSupply ? [body.builder.netOrigin(net)] : []);
     }
   });
+  const several = severalDriven(body, usage);
+  for (const net of several) conflicts.set(net, []);
   if (conflicts.size === 0) return;
-  collectDrivers(body, conflicts);
+  collectDrivers(body, conflicts, several);
   reportConflicts(body, conflicts);
 }
 
-function collectDrivers(body: ModuleBody, conflicts: ReadonlyMap<number, Origin[]>): void {
+/** Variables that several processes drive, or a process and something else; z or not is no matter. */
+function severalDriven({ builder, floatingVariables }: ModuleBody, usage: Usage): Set<number> {
+  const driven = new Set<number>();
+  const several = new Set<number>();
+  for (const variable of floatingVariables) {
+    const net = builder.find(variable);
+    if (driven.has(net) || usage.drivers[net]! > 0) several.add(net);
+    driven.add(net);
+  }
+  return several;
+}
+
+function collectDrivers(
+  body: ModuleBody,
+  conflicts: ReadonlyMap<number, Origin[]>,
+  parts: ReadonlySet<number>,
+): void {
   const { builder, children, design } = body;
   for (let driver = 0; driver < builder.driverCount; driver++) {
-    if (builder.driverKind(driver) >= BUS_PART) continue;
-    conflicts.get(builder.find(builder.driverOutput(driver)))?.push(builder.driverOrigin(driver));
+    const kind = builder.driverKind(driver);
+    const net = builder.find(builder.driverOutput(driver));
+    if (kind === DROPPED || (kind === BUS_PART && !parts.has(net))) continue;
+    conflicts.get(net)?.push(builder.driverOrigin(driver));
   }
   for (let child = 0; child < children.count; child++) {
     const template = design.templates[children.template(child)]!;

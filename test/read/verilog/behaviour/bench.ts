@@ -1,4 +1,6 @@
 import { CircuitBuilder } from '../../../../compiler/circuit/builder.js';
+import { PartKind, packTraits } from '../../../../compiler/circuit/busParts.js';
+import { resolveBuses } from '../../../../compiler/circuit/busResolution.js';
 import type { Circuit } from '../../../../compiler/circuit/circuit.js';
 import { GateKind } from '../../../../compiler/circuit/gates.js';
 import type { NetId } from '../../../../compiler/circuit/ids.js';
@@ -65,6 +67,7 @@ export function bench(items: string): Bench {
   const syntax = parseVerilog([source], {}, sources, diagnostics);
   const builder = new CircuitBuilder();
   builder.addSource(source);
+  const floating = new Set<NetId>();
   const shared: Elaboration = {
     builder,
     names: syntax.names,
@@ -72,12 +75,21 @@ export function bench(items: string): Bench {
     diagnostics,
     budget: new Budget(),
     initialValues: new Map(),
+    driveFloating: (net, { data, enable }) => {
+      floating.add(net);
+      builder.busPart(net, data, enable, packTraits({ kind: PartKind.Driver }));
+    },
   };
   const scope = new ModuleScope(shared);
   const module = syntax.modules[0]!;
   for (const item of module.items) declare(item, scope, builder);
   for (const item of module.items) if (item.kind === 'initial') lowerInitial(item, scope);
   for (const item of module.items) build(item, scope);
+  for (const [net, value] of shared.initialValues) {
+    const kind = value === 1 ? GateKind.One : GateKind.Zero;
+    if (!floating.has(net) && !builder.isDriven(net)) builder.drive(net, kind, []);
+  }
+  resolveBuses(builder);
   const circuit = builder.finish('test');
   const nets = (name: string): readonly NetId[] => {
     const binding = scope.resolve([syntax.names.internText(name)]);

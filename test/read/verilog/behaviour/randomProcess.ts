@@ -1,7 +1,10 @@
 import fc from 'fast-check';
 
-/** Values of variables and inputs, three bits each, by name. */
+/** Values of variables and inputs by name: three bits each, and above them three that tell of z. */
 export type Values = Record<string, number>;
+
+/** All three bits z. */
+const FLOATING = 0o70;
 
 /** A piece of Verilog and what it does, worked out without the compiler. */
 interface Meaning<R> {
@@ -9,10 +12,17 @@ interface Meaning<R> {
   readonly run: (state: State) => R;
 }
 
+/** Some bits of a variable and what is assigned to them. */
+interface Write {
+  readonly name: string;
+  readonly mask: number;
+  readonly value: number;
+}
+
 /** What a process works on: values now, and those that non-blocking assignments leave for later. */
-export interface State {
+interface State {
   readonly now: Values;
-  readonly later: Values;
+  readonly later: Write[];
 }
 
 /** A statement and its effect on a state. */
@@ -37,6 +47,19 @@ function value(names: readonly string[]): fc.Arbitrary<Value> {
   );
 }
 
+/** A value that may be z, in one branch of a conditional or some bits of a concatenation. */
+function floating(values: fc.Arbitrary<Value>): fc.Arbitrary<Value> {
+  return fc.tuple(fc.nat(4), values, values, values).map(([kind, a, b, c]): Value => {
+    if (kind === 0) return { text: "'bz", run: () => FLOATING };
+    if (kind === 1) return { text: "{1'bz, 2'd1}", run: () => 0o41 };
+    if (kind === 2) return a;
+    return {
+      text: `(${a.text} < ${b.text} ? ${c.text} : 3'bz)`,
+      run: (state) => (a.run(state) < b.run(state) ? c.run(state) : FLOATING),
+    };
+  });
+}
+
 const operators: Readonly<Record<string, (a: number, b: number) => number>> = {
   '+': (a, b) => a + b,
   '-': (a, b) => a - b,
@@ -44,17 +67,28 @@ const operators: Readonly<Record<string, (a: number, b: number) => number>> = {
   '^': (a, b) => a ^ b,
 };
 
-/** How a variable is assigned, `=` or `<=`. */
-type Targets = Readonly<Record<string, '=' | '<='>>;
+function carryOut({ name, mask, value: bits }: Write, values: Values): void {
+  values[name] = (values[name]! & ~mask) | (bits & mask);
+}
+
+/** Lets a process run once: what it assigns by `<=` comes last, in the order of the text. */
+export function step(process: Process, values: Values): void {
+  const state: State = { now: values, later: [] };
+  process.run(state);
+  for (const write of state.later) carryOut(write, values);
+}
+
+/** How a variable is assigned: `either` for both ways in turn; and whether it may be z. */
+type Targets = Readonly<Record<string, { readonly by: '=' | '<=' | 'either'; readonly z?: true }>>;
 
 function assignment(targets: Targets, values: fc.Arbitrary<Value>): fc.Arbitrary<Process> {
-  const write = (name: string, index: (state: State) => [number, number]) => (v: Value) => {
-    return (state: State): void => {
-      const to = targets[name] === '=' ? state.now : state.later;
-      const before = to[name] ?? state.now[name]!;
+  const write = (name: string, index: (state: State) => [number, number], v: Value) => {
+    return (state: State): Write => {
       const [at, width] = index(state);
-      const mask = (((1 << width) - 1) << at) & 7;
-      to[name] = (before & ~mask) | ((v.run(state) << at) & mask);
+      const bits = (((1 << width) - 1) << at) & 7;
+      const all = v.run(state);
+      const z = (all >> 3) << at;
+      return { name, mask: (bits << 3) | bits, value: ((z & 7) << 3) | ((all << at) & 7) };
     };
   };
   const name = fc.constantFrom(...Object.keys(targets));
@@ -65,8 +99,19 @@ function assignment(targets: Targets, values: fc.Arbitrary<Value>): fc.Arbitrary
     fc.constant({ text: '[a]', at: ({ now }: State): [number, number] => [now.a!, 1] }),
     fc.constant({ text: '[b +: 2]', at: ({ now }: State): [number, number] => [now.b!, 2] }),
   );
-  return fc.tuple(name, places, values).map(([to, place, v]): Process => {
-    return { text: `${to}${place.text} ${targets[to]} ${v.text};`, run: write(to, place.at)(v) };
+  const all = fc.tuple(name, places, values, floating(values), fc.boolean());
+  return all.map(([to, place, known, maybe, isBlocking]): Process => {
+    const { by, z } = targets[to]!;
+    const operator = by !== 'either' ? by : isBlocking ? '=' : '<=';
+    const v = z ? maybe : known;
+    const writeOf = write(to, place.at, v);
+    return {
+      text: `${to}${place.text} ${operator} ${v.text};`,
+      run: (state) => {
+        if (operator === '=') carryOut(writeOf(state), state.now);
+        else state.later.push(writeOf(state));
+      },
+    };
   });
 }
 
