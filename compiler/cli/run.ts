@@ -16,6 +16,11 @@ import { addNetlistOptions, loadCircuit, type NetlistOptions, type ReadFile } fr
 import { seedArgument } from './numbers.js';
 import { printDiagnostics } from './printDiagnostics.js';
 import {
+  type ActivityOptions,
+  activityOutlets,
+  addActivityOptions,
+} from './run/activityOptions.js';
+import {
   addExpectationOptions,
   type ExpectationOptions,
   expectationName,
@@ -57,6 +62,7 @@ export interface RunOptions
     StimulusOptions,
     PeriodOptions,
     WaveOptions,
+    ActivityOptions,
     RecordOptions,
     ResponseOptions,
     ExpectationOptions {
@@ -78,6 +84,7 @@ export function runCommand(
   addResponseOptions(command);
   addExpectationOptions(command);
   addWindowOptions(addWaveOptions(command), false);
+  addActivityOptions(command);
   addRecordOptions(command);
   addCacheOption(command);
   return command
@@ -140,7 +147,7 @@ export async function run(
     ...{ design, engine: options.engine, powerUp, seed: options.seed, onDeparture: tell },
     ...(emitter && { emitter }),
   });
-  const waves = waveOutlets(design, options);
+  const waves = [...waveOutlets(design, options), ...activityOutlets(design, options, emitter)];
   const interrupt = new AbortController();
   process.once('SIGINT', () => {
     interrupt.abort();

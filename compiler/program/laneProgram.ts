@@ -62,4 +62,6 @@ export const firstLaneResult = (program: LaneProgram): number =>
 export interface LanePrograms {
   readonly programs: readonly LaneProgram[];
   readonly pattern: Uint8Array;
+  /** Whether the module can count ones and changes in its response; for 128 lanes alone. */
+  readonly counts?: boolean;
 }

@@ -1,6 +1,7 @@
 import type { Departure } from '../../runtime/node/index.js';
 import type { PowerUp } from '../circuit/powerUp.js';
 import type { EngineName } from '../engines.js';
+import { type ActivitySummary, activityLines } from './outlets/activitySummary.js';
 import { type BusEvent, busEventText } from './outlets/busEvent.js';
 
 /** What a run came to; printed as it stands by `run --json`. */
@@ -26,6 +27,8 @@ export interface RunSummary {
   readonly unknownRegisters?: readonly string[];
   /** Buses that were in conflict or floated, where the circuit has buses. */
   readonly buses?: readonly BusEvent[];
+  /** What the nets did, where that was counted. */
+  readonly activity?: ActivitySummary;
   readonly notes: readonly string[];
 }
 
@@ -56,6 +59,7 @@ export function summaryText(summary: RunSummary, expectation: string | undefined
   if (summary.repetition !== undefined) lines.push(repetitionText(summary.repetition));
   if (summary.unknownRegisters !== undefined) lines.push(unknownText(summary.unknownRegisters));
   lines.push(...busLines(summary.buses ?? []));
+  lines.push(...activityLines(summary.activity));
   for (const note of summary.notes) lines.push(`note: ${note}`);
   if (summary.stopped?.reason === INTERRUPTED) {
     lines.push(`stopped at cycle ${summary.stopped.cycle}: ${summary.stopped.reason}`);

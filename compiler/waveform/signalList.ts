@@ -47,10 +47,16 @@ export function portSignals(circuit: Circuit): SignalList {
 
 /** The dotted name of a signal of the list: `cpu.acc`, or `cpu.acc[3:0]` for a part. */
 export function signalName(hierarchy: Hierarchy, list: SignalList, index: number): string {
-  const path = scopePath(hierarchy, list.scope[index]!);
   const signal = signalAt(hierarchy, list.scope[index]!, list.signal[index]!);
-  const name = path === '' ? signal.name : `${path}.${signal.name}`;
-  return name + partText(signal, list.low[index]!, list.width[index]!);
+  const part = partText(signal, list.low[index]!, list.width[index]!);
+  return signalPath(hierarchy, list, index) + part;
+}
+
+/** The dotted name of a signal of the list without the part of it that is meant. */
+export function signalPath(hierarchy: Hierarchy, list: SignalList, index: number): string {
+  const path = scopePath(hierarchy, list.scope[index]!);
+  const { name } = signalAt(hierarchy, list.scope[index]!, list.signal[index]!);
+  return path === '' ? name : `${path}.${name}`;
 }
 
 /** The signal of a scope. */

@@ -1,5 +1,6 @@
 import { longestValue, writeValue } from '../../runtime/valueText.js';
 import { ByteText } from './byteText.js';
+import { quoted } from './quoted.js';
 import { signalName } from './signalList.js';
 import type { WaveForm, WaveRequest, WaveRows, WaveSink } from './wave.js';
 
@@ -53,6 +54,3 @@ class TableSink implements WaveSink {
     yield this.#text.take();
   }
 }
-
-const quoted = (name: string): string =>
-  /[",\r\n]/.test(name) ? `"${name.replaceAll('"', '""')}"` : name;

@@ -1,4 +1,5 @@
 import { type Command, InvalidArgumentError, Option } from 'commander';
+import type { Circuit } from '../../circuit/circuit.js';
 import type { Design } from '../../compile.js';
 import type { OutletPlan } from '../../run/outlets/outlet.js';
 import { MOST_SHOWN, pictureForm } from '../../waveform/picture/pictureForm.js';
@@ -22,6 +23,12 @@ export interface WaveOptions {
   readonly nets?: readonly string[];
   readonly from?: number;
   readonly to?: number;
+}
+
+/** What else looks at the chosen signals and cycles. */
+interface ActivityFiles {
+  readonly activity?: string;
+  readonly activityPicture?: string;
 }
 
 /** Adds the options that ask for waves, but for the window. */
@@ -55,16 +62,21 @@ export interface ChosenWave {
 }
 
 /** The waves asked for. Throws UsageError for patterns that choose nothing, and for too many signals. */
-export function wavesWanted({ circuit }: Design, options: WaveOptions): ChosenWave[] {
+export function wavesWanted(
+  { circuit }: Design,
+  options: WaveOptions & ActivityFiles,
+): ChosenWave[] {
   const { waveform, table, picture, nets = [] } = options;
+  const { activity, activityPicture } = options;
   const isAny = (waveform ?? table ?? picture) !== undefined;
+  const isCounted = (activity ?? activityPicture) !== undefined;
   const stray = nets.length > 0 ? '--nets' : options.from !== undefined ? '--from' : '--to';
   const isStray = nets.length > 0 || (options.from ?? options.to) !== undefined;
-  if (!isAny && isStray) {
+  if (!isAny && !isCounted && isStray) {
     throw new UsageError(`error: ${stray} is for --waveform, --table or --picture FILE`);
   }
   if (!isAny) return [];
-  const chosen = chosenSignals(() => signalsOf(circuit, nets));
+  const chosen = chosenSignals(circuit, nets);
   const shown = nets.length === 0 ? portSignals(circuit) : chosen;
   if (picture !== undefined && shown.count > MOST_SHOWN.signals) {
     throw new UsageError(
@@ -89,16 +101,17 @@ export function windowOf({ from = 0, to = Number.POSITIVE_INFINITY, picture }: W
 }
 
 /** The outlets that write the waves asked for, if any. */
-export function waveOutlets(design: Design, options: WaveOptions): OutletPlan[] {
+export function waveOutlets(design: Design, options: WaveOptions & ActivityFiles): OutletPlan[] {
   const window = windowOf(options);
   return wavesWanted(design, options).map(({ path, form, list }) =>
     writeWave(path, form, list, window),
   );
 }
 
-function chosenSignals(choose: () => SignalList): SignalList {
+/** The signals of --nets, all without it. Throws UsageError for patterns that choose nothing. */
+export function chosenSignals(circuit: Circuit, nets: readonly string[]): SignalList {
   try {
-    return choose();
+    return signalsOf(circuit, nets);
   } catch (error) {
     if (error instanceof UnmatchedPattern) throw new UsageError(`error: --nets ${error.message}`);
     throw error;

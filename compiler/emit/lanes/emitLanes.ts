@@ -9,10 +9,12 @@ import {
   laneOperands,
 } from '../../program/laneProgram.js';
 import { ANCHOR_SLOT, anchored } from './anchored.js';
+import { addCount } from './countWords.js';
 import { addLaneLoop, type LaneCycle } from './laneLoop.js';
 import { laneStores } from './laneStores.js';
 import { type BlockPlan, type Planning, planBlock, planCopies } from './planBlock.js';
 import { addSpread } from './spreadRows.js';
+import { addTurn } from './turnRows.js';
 import { type Word, wordOf } from './word.js';
 import { type LaneModuleParts, writeBlock } from './writeBlock.js';
 
@@ -30,7 +32,7 @@ const roundUp = (value: number): number => Math.ceil(value / 64) * 64;
 /** Emits the programs of a circuit's cycles as a module of words with a bit for each lane. */
 export function emitLanes(
   wasm: typeof binaryen,
-  { programs, pattern }: LanePrograms,
+  { programs, pattern, counts = false }: LanePrograms,
   layout: ModelLayout,
   lanes: LaneCount,
 ): LaneModel {
@@ -60,6 +62,10 @@ export function emitLanes(
     const place = { scratch, running, patternAt, patternLength: pattern.length };
     addLaneLoop(parts, place, cycles);
     addSpread(parts, layout.inputs, layout.threeValued);
+    if (counts) {
+      addTurn(parts);
+      addCount(parts, layout.threeValued);
+    }
     return {
       bytes: Uint8Array.from(module.emitBinary()),
       layout,

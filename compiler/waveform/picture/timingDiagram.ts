@@ -1,5 +1,6 @@
 import type { Stretch } from './courses.js';
 import { STYLE } from './style.js';
+import { escaped, figure, round, tickStep } from './svgText.js';
 
 /** What a timing diagram shows: the values of signals over some cycles, last one exclusive. */
 export interface TimingDiagram {
@@ -109,13 +110,6 @@ function grid({ from, to }: TimingDiagram, { base, x, left, right }: Frame): str
   ].join('\n');
 }
 
-/** The least of 1, 2, 5, 10, … that makes at most `parts` of a range. */
-function tickStep(range: number, parts: number): number {
-  for (let power = 1; ; power *= 10) {
-    for (const step of [1, 2, 5]) if (range <= step * power * parts) return step * power;
-  }
-}
-
 function lineText({ name, isWord, stretches }: DiagramLine, row: number, frame: Frame): string {
   const top = TOP + row * ROW + (ROW - WAVE) / 2 - 4;
   const place = round(top + WAVE / 2 + 4.5);
@@ -189,10 +183,3 @@ const shown = (text: string): string => (text.startsWith('0b') ? text.slice(1) :
 
 const box = (kind: string, x: number, y: number, width: number, tip: string): string =>
   `<rect class="${kind}" x="${round(x)}" y="${round(y)}" width="${round(width)}" height="${WAVE}" rx="4"><title>${escaped(tip)}</title></rect>`;
-
-const figure = (value: number): string => value.toLocaleString('en-US');
-
-const round = (value: number): number => Math.round(value * 100) / 100;
-
-const escaped = (content: string): string =>
-  content.replace(/[<>&"]/g, (character) => `&#${character.charCodeAt(0)};`);
