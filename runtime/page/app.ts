@@ -1,5 +1,6 @@
 import type { Desk, View } from './desk.js';
 import { element } from './dom.js';
+import { Pace } from './pace.js';
 import type { Session } from './session.js';
 import type { Base } from './valueBase.js';
 import { Diagram } from './views/diagram.js';
@@ -9,30 +10,30 @@ import { netPanel } from './views/nets.js';
 import { outputPanel } from './views/outputs.js';
 import { toolbar } from './views/toolbar.js';
 
-/** Time of a frame that cycles may take, at least and at most, and that looking back may take. */
-const LEAST_RUN_MS = 2;
-const MOST_RUN_MS = 8;
+/** Time of a frame that looking back may take, and time that a leap may take at once. */
 const LOOK_MS = 3;
-/** A frame that took longer came late. */
-const LATE_MS = 20;
+const LEAP_MS = 50;
 /** Cycles in a frame beyond which single ones cannot be followed by eye. */
 const SWIFT = 64;
 /** How often parts that cannot be followed anyway are brought up to date while it is swift. */
 const SWIFT_MS = 120;
+/** How often the picture changes while it runs, for those who asked for less motion. */
+const CALM_MS = 500;
 
 /** The page: its parts, and the loop that lets time pass. */
 export class App implements Desk {
   readonly session: Session;
   base: Base = 'hex';
   isRunning = false;
-  rate = Number.POSITIVE_INFINITY;
   measured = 0;
   readonly #status = element('p', { role: 'status', class: 'status' });
   readonly #views: View[] = [];
   readonly #diagram: Diagram;
-  #owed = 0;
+  readonly #pace = new Pace();
+  readonly #calm = matchMedia('(prefers-reduced-motion: reduce)');
+  /** The cycle at which a leap ends. */
+  #goal: number | undefined;
   #last = 0;
-  #runMs = MOST_RUN_MS;
   #shownAt = 0;
   #isStale = true;
   /** The fault that the user knows of. */
@@ -42,6 +43,14 @@ export class App implements Desk {
   constructor(session: Session) {
     this.session = session;
     this.#diagram = new Diagram(this);
+  }
+
+  get rate(): number {
+    return this.#pace.rate;
+  }
+
+  set rate(rate: number) {
+    this.#pace.rate = rate;
   }
 
   /** Puts the page together. */
@@ -100,18 +109,34 @@ export class App implements Desk {
     this.refresh();
   }
 
+  leap(cycles: number): void {
+    const { session } = this;
+    const from = this.#goal ?? session.model.cycle;
+    this.#goal = from + cycles;
+    session.advance(cycles, this.#diagram.visible, performance.now() + LEAP_MS);
+    this.#diagram.follow();
+    this.#tellFault();
+    if (session.fault !== undefined || session.model.cycle >= this.#goal) this.#goal = undefined;
+    else if (!this.isRunning) this.run(true);
+    this.refresh();
+  }
+
   run(isRunning: boolean): void {
     this.isRunning = isRunning;
-    this.#owed = 0;
+    this.#pace.restart();
     this.#rateStart = { at: performance.now(), cycle: this.session.model.cycle };
     this.measured = 0;
     if (isRunning) this.#diagram.follow();
-    else this.say(`Stopped at cycle ${this.session.model.cycle.toLocaleString('en-US')}.`);
+    else {
+      this.#goal = undefined;
+      this.say(`Stopped at cycle ${this.session.model.cycle.toLocaleString('en-US')}.`);
+    }
     this.refresh();
   }
 
   reset(): void {
     this.session.reset();
+    this.#goal = undefined;
     this.#rateStart = { at: performance.now(), cycle: 0 };
     this.#diagram.follow();
     this.say('Back at power-up.');
@@ -119,10 +144,10 @@ export class App implements Desk {
   }
 
   #frame(time: number): void {
-    const passed = Math.min(100, time - this.#last);
+    this.#pace.frame(time - this.#last);
     this.#last = time;
     try {
-      this.#pass(time, passed);
+      this.#pass(time);
     } catch (error) {
       // A fault of the page must not leave it dead.
       this.isRunning = false;
@@ -131,15 +156,12 @@ export class App implements Desk {
     requestAnimationFrame((next) => this.#frame(next));
   }
 
-  #pass(time: number, passed: number): void {
-    // On a busy machine the picture comes first.
-    const fitting = passed > LATE_MS ? this.#runMs * 0.8 : this.#runMs + 0.1;
-    this.#runMs = Math.max(LEAST_RUN_MS, Math.min(MOST_RUN_MS, fitting));
+  #pass(time: number): void {
     const before = this.session.model.cycle;
-    if (this.isRunning) this.#advance(passed);
-    const isSwift = this.session.model.cycle - before > SWIFT;
-    if (this.isRunning && this.session.model.cycle !== before) this.#isStale = true;
-    if (this.#isStale && (!isSwift || time - this.#shownAt > SWIFT_MS)) {
+    if (this.isRunning) this.#advance();
+    const moved = this.session.model.cycle - before;
+    if (moved > 0) this.#isStale = true;
+    if (this.#isStale && time - this.#shownAt >= this.#restMs(moved)) {
       this.#isStale = false;
       this.#shownAt = time;
       this.session.look();
@@ -152,16 +174,25 @@ export class App implements Desk {
     this.#diagram.lookBack(performance.now() + LOOK_MS);
   }
 
-  #advance(passed: number): void {
-    const isFree = this.rate === Number.POSITIVE_INFINITY;
-    const room = Math.max(16, Math.floor(this.#runMs / Math.max(1e-6, this.session.cycleMs)));
-    this.#owed += isFree ? room : (this.rate * passed) / 1000;
-    const cycles = Math.min(Math.floor(this.#owed), room);
-    // What a frame has no time for is not made up for later.
-    this.#owed = Math.min(this.#owed - cycles, 1);
-    this.session.advance(cycles, this.#diagram.visible);
+  /** Milliseconds that a picture stays while cycles pass. */
+  #restMs(moved: number): number {
+    if (this.isRunning && this.#calm.matches) return CALM_MS;
+    return moved > SWIFT ? SWIFT_MS : 0;
+  }
+
+  #advance(): void {
+    const { session } = this;
+    const pace = this.#pace;
+    const goal = this.#goal;
+    const cycles =
+      goal === undefined
+        ? pace.take(session.cycleMs)
+        : Math.min(goal - session.model.cycle, pace.room(session.cycleMs));
+    // Measured costs are of the past; the clock has the last word.
+    session.advance(cycles, this.#diagram.visible, performance.now() + pace.runMs);
     this.#measure();
     this.#tellFault();
+    if (goal !== undefined && session.model.cycle >= goal) this.run(false);
   }
 
   #measure(): void {

@@ -21,8 +21,10 @@ export interface Desk {
   say(text: string, isProblem?: boolean): void;
   /** Says that something has changed; it is shown in the next frame. */
   refresh(): void;
-  /** Lets some cycles pass at once. */
+  /** Lets a few cycles pass at once. */
   step(cycles: number): void;
+  /** Lets many cycles pass, as fast as the page can while it stays alive. */
+  leap(cycles: number): void;
   /** Starts and stops running. */
   run(isRunning: boolean): void;
   /** Back to power-up. */

@@ -38,10 +38,18 @@ export class Recording {
   /** Adds cycles; with stride 0 the one row of inputs was held. */
   add(cycles: number, inputs: Uint32Array, stride: number, outputs: Uint32Array): void {
     const { inputWords, outputWords } = this.shape;
-    for (let i = Math.max(0, cycles - this.capacity); i < cycles; i++) {
+    for (let i = Math.max(0, cycles - this.capacity); i < cycles; ) {
       const at = (this.end + i) % this.capacity;
-      this.#inputs.set(inputs.subarray(i * stride, i * stride + inputWords), at * inputWords);
-      this.#outputs.set(outputs.subarray(i * outputWords, (i + 1) * outputWords), at * outputWords);
+      const rows = Math.min(cycles - i, this.capacity - at);
+      this.#outputs.set(
+        outputs.subarray(i * outputWords, (i + rows) * outputWords),
+        at * outputWords,
+      );
+      const given = stride === 0 ? 1 : rows;
+      const from = i * stride;
+      this.#inputs.set(inputs.subarray(from, from + given * inputWords), at * inputWords);
+      repeat(this.#inputs, at * inputWords, inputWords, given, rows);
+      i += rows;
     }
     this.end += cycles;
     this.first = Math.max(this.first, this.end - this.capacity);
@@ -64,5 +72,13 @@ export class Recording {
   inputRow(cycle: number): Uint32Array {
     const at = (cycle % this.capacity) * this.shape.inputWords;
     return this.#inputs.slice(at, at + this.shape.inputWords);
+  }
+}
+
+// Makes the first rows of an array, of which some are there, fill more of it.
+function repeat(words: Uint32Array, at: number, width: number, given: number, rows: number): void {
+  for (let there = given; there < rows; there *= 2) {
+    const more = Math.min(there, rows - there);
+    words.copyWithin(at + there * width, at, at + more * width);
   }
 }

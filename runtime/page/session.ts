@@ -16,8 +16,12 @@ export interface About {
   readonly resets: readonly { readonly name: string; readonly active: 0 | 1 }[];
 }
 
-/** Cycles of one call of the model; its rows are recorded afterwards. */
+/** Cycles of one call of the model, at most; its rows are recorded afterwards. */
 const CHUNK = 1024;
+/** Time that such a call should take at most, in milliseconds. */
+const PIECE_MS = 1;
+/** What took less tells little: clocks of browsers are coarse. */
+const TELLING_MS = 0.5;
 
 /** The model at work in the page: what goes in, what has been, what is shown. */
 export class Session {
@@ -34,7 +38,7 @@ export class Session {
   stimulusStart = 0;
   /** Why no further cycle can be run. */
   fault: string | undefined;
-  /** Milliseconds that a cycle took of late, its recording included. */
+  /** Milliseconds that a cycle took of late, with its recording and marks. */
   cycleMs = 0.01;
   readonly #inputs: Uint32Array;
   readonly #response: Uint32Array;
@@ -94,17 +98,22 @@ export class Session {
     }
   }
 
-  /** Lets cycles pass; fewer where one has no result. `visible` of the last are looked at closely. */
-  advance(cycles: number, visible: number): void {
+  /**
+   * Lets cycles pass; fewer where one has no result, or where it is past `until`, a moment on the
+   * clock of `performance.now`. `visible` of the last are looked at closely.
+   */
+  advance(cycles: number, visible: number, until = Number.POSITIVE_INFINITY): void {
+    const started = performance.now();
     let left = cycles;
     while (left > 0 && this.fault === undefined) {
       // A place to look back from, just before what will be seen.
       if (left <= visible || this.traces.isFar(this.model.cycle)) this.traces.mark(this.model);
       const whole = left > visible ? left - visible : left;
-      const done = this.#run(Math.min(whole, CHUNK));
-      if (done === 0) return;
+      const done = this.#run(Math.min(whole, this.#piece));
       left -= done;
+      if (done === 0 || performance.now() >= until) break;
     }
+    this.#learn(cycles - left, performance.now() - started);
   }
 
   /** Back to power-up; a stimulus begins again. */
@@ -153,7 +162,6 @@ export class Session {
     if (driven) this.#fillRows(driven, cycles);
     const rows = driven ? this.#rows : this.#inputs;
     const before = this.model.cycle;
-    const started = performance.now();
     try {
       this.model.runRows(cycles, rows, this.#response, stride);
     } catch (error) {
@@ -162,11 +170,18 @@ export class Session {
     }
     const done = this.model.cycle - before;
     this.recording.add(done, rows, stride, this.#response);
-    // Long pieces tell more than short ones, whose time is a rounded one.
-    const took = (performance.now() - started) / Math.max(1, done);
-    this.cycleMs += (took - this.cycleMs) * Math.min(1, done / CHUNK) * 0.3;
     if (driven) this.#applyStimulus();
     return done;
+  }
+
+  get #piece(): number {
+    return Math.max(1, Math.min(CHUNK, Math.floor(PIECE_MS / this.cycleMs)));
+  }
+
+  #learn(cycles: number, took: number): void {
+    if (cycles === 0) return;
+    if (cycles < CHUNK && Math.max(took, cycles * this.cycleMs) < TELLING_MS) return;
+    this.cycleMs = Math.max(1e-6, this.cycleMs + (took / cycles - this.cycleMs) * 0.3);
   }
 
   #fillRows({ rows, ...stimulus }: Stimulus, cycles: number): void {

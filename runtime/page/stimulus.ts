@@ -36,6 +36,7 @@ export function stimulusOf(
   const table = fieldsOf(text, name);
   const header = table[0];
   if (header === undefined) throw new TableProblem(`${name}: the table is empty`);
+  if (table.length === 1) throw new TableProblem(`${name}:1: no row follows the header`);
   const columns = header.map((title) =>
     title.trim() === CYCLES ? undefined : columnOf(title.trim(), inputs, name),
   );

@@ -5,11 +5,15 @@ import type { Recording } from './recording.js';
 import type { Signal } from './signals.js';
 
 const MOST_MARKS = 512;
-/** The last marks are all kept; of those before every second one may go. */
-const FRESH_MARKS = 32;
+/** Characters of all marks together, at most: contents of memories may be long. */
+const MOST_TEXT = 1 << 26;
+/** Of the older marks, all but this share of the last ones, every second one may go. */
+const FRESH_SHARE = 1 / 16;
 /** Cycles from mark to mark, at least, and at most where nobody has looked. */
 const NEAR = 32;
 const FAR = 8192;
+/** Of the time that passes, marks take at most this share. */
+const MARK_SHARE = 0.1;
 
 /**
  * Values of signals in cycles that have passed. Those of ports are recorded; those of inner nets
@@ -22,6 +26,8 @@ export class Traces {
   /** By net, by cycle. */
   readonly #known = new Map<string, Map<number, Value>>();
   #viewerAt: number | undefined;
+  /** The moment from which on a mark is affordable again. */
+  #affordableAt = 0;
   /** Grows whenever a value has been found. */
   found = 0;
 
@@ -45,12 +51,19 @@ export class Traces {
   /** Keeps the state that a model is in. */
   mark(model: Model): void {
     const last = this.#marks.at(-1);
-    if (last !== undefined && model.cycle - last.cycle < NEAR) return;
-    this.#marks.push({ cycle: model.cycle, saved: model.save() });
-    if (this.#marks.length <= MOST_MARKS) return;
+    const started = performance.now();
+    const passed = last === undefined ? FAR : model.cycle - last.cycle;
+    if (passed < NEAR || (passed < FAR && started < this.#affordableAt)) return;
+    const saved = model.save();
+    this.#affordableAt = started + (performance.now() - started) / MARK_SHARE;
+    this.#marks.push({ cycle: model.cycle, saved });
+    const length = saved.state.length + (saved.memories?.length ?? 0);
+    const most = Math.max(4, Math.min(MOST_MARKS, Math.floor(MOST_TEXT / length)));
+    if (this.#marks.length <= most) return;
     const { first } = this.#recording;
+    const fresh = most - Math.ceil(most * FRESH_SHARE);
     this.#marks = this.#marks.filter(
-      ({ cycle }, i) => i >= MOST_MARKS - FRESH_MARKS || (i % 2 === 1 && cycle >= first - FAR),
+      ({ cycle }, i) => i >= fresh || (i % 2 === 1 && cycle >= first - FAR),
     );
   }
 

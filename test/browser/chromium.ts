@@ -1,13 +1,40 @@
-import { spawnSync } from 'node:child_process';
-import bundled from '@sparticuz/chromium';
+import { execFile, spawnSync } from 'node:child_process';
+import { existsSync, mkdirSync, mkdtempSync, readFileSync, renameSync, rmSync } from 'node:fs';
+import { dirname, join } from 'node:path';
+import { fileURLToPath } from 'node:url';
+import { promisify } from 'node:util';
 import { type Browser, chromium } from 'playwright-core';
 
+const modules = fileURLToPath(new URL('../../node_modules/', import.meta.url));
+
 /**
- * Unpacks the Chromium of the development dependencies to the temporary folder; returns its path.
+ * Unpacks the Chromium of the development dependencies, once for all who ask; returns its path.
  *
- * What stands there under its name is taken for whole, so the folder must be the caller's own.
+ * It comes to its place whole, so that an unpacking which is broken off leaves no half of one.
  */
-export const unpackChromium = (): Promise<string> => bundled.executablePath();
+export async function unpackChromium(): Promise<string> {
+  const { version } = JSON.parse(
+    readFileSync(join(modules, '@sparticuz/chromium/package.json'), 'utf8'),
+  ) as { version: string };
+  const folder = join(modules, `.cache/chromium-${version}`);
+  if (!existsSync(folder)) {
+    mkdirSync(dirname(folder), { recursive: true });
+    const partial = mkdtempSync(`${folder}-`);
+    // It goes to the temporary folder, which is another one for a process of its own.
+    const script = "await (await import('@sparticuz/chromium')).default.executablePath()";
+    const env = { ...process.env, TMPDIR: partial };
+    const options = { cwd: modules, env };
+    await promisify(execFile)(process.execPath, ['--input-type=module', '-e', script], options);
+    try {
+      renameSync(partial, folder);
+    } catch (error) {
+      // Another one may have been faster.
+      if (!existsSync(folder)) throw error;
+      rmSync(partial, { recursive: true });
+    }
+  }
+  return join(folder, 'chromium');
+}
 
 /**
  * Starts a Chromium without a window. It sends everything that is not on the loopback interface

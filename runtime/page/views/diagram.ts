@@ -20,7 +20,7 @@ export class Diagram implements View {
   readonly #desk: Desk;
   readonly #canvas: HTMLCanvasElement;
   readonly #names = element('div', { class: 'names' });
-  readonly #where = element('output', {});
+  readonly #where = element('span', { class: 'quiet' });
   /** Pixels of a cycle, as an index. */
   #zoom = 3;
   /** The cycle under the cursor; undefined for the present one. */
@@ -162,7 +162,7 @@ export class Diagram implements View {
     return element(
       'div',
       { class: 'track' },
-      element('span', { class: 'name', title: name }, name),
+      element('span', { class: 'name', title: name }, element('bdi', {}, name)),
       value,
       remove,
     );

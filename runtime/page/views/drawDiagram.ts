@@ -36,7 +36,7 @@ interface Colours {
 
 const LOW = 21;
 const HIGH = 7;
-const SLANT = 3;
+const ROUND = 3;
 
 /** Draws a timing diagram. Colours come from the style of the page. */
 export function drawDiagram(canvas: HTMLCanvasElement, scene: Scene): void {
@@ -77,7 +77,9 @@ function drawGround(
     const x = Math.round((cycle - first) * cycleWidth) + 0.5;
     if (x > width) break;
     line(context, x, ROW_HEIGHT - 6, x, height);
-    context.fillText(cycle.toLocaleString('en-US'), x + 3, ROW_HEIGHT / 2);
+    const text = cycle.toLocaleString('en-US');
+    if (x + 3 + context.measureText(text).width > width) break;
+    context.fillText(text, x + 3, ROW_HEIGHT / 2);
   }
   for (let i = 1; i <= tracks.length; i++) {
     line(context, 0, ROW_HEIGHT * i + 0.5, width, ROW_HEIGHT * i + 0.5);
@@ -94,6 +96,25 @@ function drawGround(
   context.setLineDash([]);
 }
 
+interface Stretch {
+  readonly value: Value | undefined;
+  /** Where it begins and ends, in pixels. */
+  readonly left: number;
+  readonly right: number;
+}
+
+/** The stretches of cycles over which a value stays. */
+function stretches(values: Track['values'], cycleWidth: number): Stretch[] {
+  const found: Stretch[] = [];
+  for (let start = 0; start < values.length; ) {
+    let end = start + 1;
+    while (end < values.length && values[end] === values[start]) end++;
+    found.push({ value: values[start], left: start * cycleWidth, right: end * cycleWidth });
+    start = end;
+  }
+  return found;
+}
+
 function drawBit(
   context: CanvasRenderingContext2D,
   { cycleWidth }: Scene,
@@ -101,24 +122,25 @@ function drawBit(
   { values }: Track,
   top: number,
 ): void {
-  context.lineWidth = 1.75;
-  context.strokeStyle = colours.wave;
   context.fillStyle = colours.fill;
   const path = new Path2D();
   let before: Value | undefined;
-  for (const [i, value] of values.entries()) {
-    const x = i * cycleWidth;
-    if (value === 'x') {
-      hatch(context, colours, x, top, cycleWidth);
-    } else if (value !== undefined) {
+  for (const { value, left, right } of stretches(values, cycleWidth)) {
+    if (value === 0 || value === 1) {
       const y = top + (value === 1 ? HIGH : LOW);
-      if (before === undefined || before === 'x') path.moveTo(x, y);
-      else path.lineTo(x, y);
-      path.lineTo(x + cycleWidth, y);
-      if (value === 1) context.fillRect(x, top + HIGH, cycleWidth, LOW - HIGH);
+      if (before === undefined || before === 'x') path.moveTo(left, y);
+      else path.lineTo(left, y);
+      path.lineTo(right, y);
+      if (value === 1) context.fillRect(left, top + HIGH, right - left, LOW - HIGH);
+    } else if (value === 'x') {
+      context.save();
+      hatch(context, colours, left, right, top);
+      context.restore();
     }
     before = value;
   }
+  context.lineWidth = 1.75;
+  context.strokeStyle = colours.wave;
   context.stroke(path);
 }
 
@@ -130,43 +152,26 @@ function drawWord(
   top: number,
 ): void {
   context.textAlign = 'center';
-  for (let start = 0; start < values.length; ) {
-    const value = values[start];
-    let end = start + 1;
-    while (end < values.length && values[end] === value) end++;
-    if (value !== undefined) {
-      const [left, right] = [start * cycleWidth, end * cycleWidth];
-      const isUnknown = typeof value === 'string';
-      lozenge(context, colours, left, right, top, isUnknown);
-      label(context, colours, shownValue(value, signal.width, base), left, right, top);
-    }
-    start = end;
+  for (const { value, left, right } of stretches(values, cycleWidth)) {
+    if (value === undefined) continue;
+    const isUnknown = typeof value === 'string';
+    box(context, left, right, top);
+    context.fillStyle = isUnknown ? colours.now : colours.fill;
+    context.fill();
+    context.lineWidth = 1.25;
+    context.strokeStyle = isUnknown ? colours.unknown : colours.wave;
+    context.stroke();
+    const text = /^0bx+$/.test(`${value}`) ? 'x' : shownValue(value, signal.width, base);
+    label(context, colours, text, left, right, top);
   }
 }
 
-function lozenge(
-  context: CanvasRenderingContext2D,
-  colours: Colours,
-  left: number,
-  right: number,
-  top: number,
-  isUnknown: boolean,
-): void {
-  const slant = Math.min(SLANT, (right - left) / 2);
-  const middle = top + (HIGH + LOW) / 2;
+/** A box with round corners, a little apart from its neighbours. */
+function box(context: CanvasRenderingContext2D, left: number, right: number, top: number): void {
+  const gap = Math.min(0.75, (right - left) / 8);
+  const width = right - left - 2 * gap;
   context.beginPath();
-  context.moveTo(left, middle);
-  context.lineTo(left + slant, top + HIGH);
-  context.lineTo(right - slant, top + HIGH);
-  context.lineTo(right, middle);
-  context.lineTo(right - slant, top + LOW);
-  context.lineTo(left + slant, top + LOW);
-  context.closePath();
-  context.fillStyle = isUnknown ? colours.now : colours.fill;
-  context.fill();
-  context.lineWidth = 1.5;
-  context.strokeStyle = isUnknown ? colours.unknown : colours.wave;
-  context.stroke();
+  context.roundRect(left + gap, top + HIGH, width, LOW - HIGH, Math.min(ROUND, width / 2));
 }
 
 function label(
@@ -177,7 +182,7 @@ function label(
   right: number,
   top: number,
 ): void {
-  const room = right - left - 2 * SLANT - 2;
+  const room = right - left - 2 * ROUND - 2;
   if (room < 8) return;
   const most = Math.floor(room / 7);
   const shown = text.length <= most ? text : most >= 3 ? `${text.slice(0, most - 1)}…` : '';
@@ -189,22 +194,24 @@ function label(
 function hatch(
   context: CanvasRenderingContext2D,
   colours: Colours,
-  x: number,
+  left: number,
+  right: number,
   top: number,
-  width: number,
 ): void {
-  context.save();
   context.strokeStyle = colours.unknown;
+  context.fillStyle = colours.now;
   context.lineWidth = 1;
   context.beginPath();
-  context.rect(x, top + HIGH, width, LOW - HIGH);
+  context.rect(left, top + HIGH, right - left, LOW - HIGH);
+  context.fill();
+  context.stroke();
   context.clip();
-  for (let from = x - 14 - ((x - 14) % 5); from < x + width; from += 5) {
+  context.beginPath();
+  for (let from = left - (left % 6) - 18; from < right; from += 6) {
     context.moveTo(from, top + LOW);
     context.lineTo(from + LOW - HIGH, top + HIGH);
   }
   context.stroke();
-  context.restore();
 }
 
 function line(context: CanvasRenderingContext2D, ...[x1, y1, x2, y2]: number[]): void {
@@ -221,10 +228,11 @@ function niceStep(least: number): number {
   }
 }
 
+const dark = matchMedia('(prefers-color-scheme: dark)');
 let known: { readonly scheme: boolean; readonly colours: Colours } | undefined;
 
 function coloursOf(canvas: HTMLCanvasElement): Colours {
-  const scheme = matchMedia('(prefers-color-scheme: dark)').matches;
+  const scheme = dark.matches;
   if (known?.scheme === scheme) return known.colours;
   const style = getComputedStyle(canvas);
   const colour = (name: string): string => style.getPropertyValue(`--${name}`).trim();

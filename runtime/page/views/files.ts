@@ -1,13 +1,15 @@
 import type { Desk, View } from '../desk.js';
-import { button, element, freshId, offerFile, setText } from '../dom.js';
+import { button, element, offerFile, setText } from '../dom.js';
 import { responseCsv, valueChangeDump } from '../exports.js';
 import { fragmentOf } from '../link.js';
 import { stimulusOf } from '../stimulus.js';
 
+/** Characters of an address that all of today's browsers keep whole. */
+const MOST_ADDRESS = 65_536;
+
 /** Stimulus in, response, waveforms, state and link out. */
 export function files(desk: Desk): View {
-  const id = freshId();
-  const chosen = element('input', { type: 'file', id, accept: '.csv,.json,text/csv' });
+  const chosen = element('input', { type: 'file', accept: '.csv,.json,text/csv', hidden: true });
   const take = async (file: File | undefined): Promise<void> => {
     if (file === undefined) return;
     takeFile(desk, file.name, await file.text());
@@ -32,11 +34,8 @@ export function files(desk: Desk): View {
     element(
       'div',
       { class: 'drop' },
-      element(
-        'label',
-        { for: id },
-        'Drop a stimulus table (CSV) or a saved state (JSON), or choose one: ',
-      ),
+      element('span', {}, 'Drop a stimulus table (CSV) or a saved state (JSON) anywhere, or'),
+      button('Choose a file', () => chosen.click()),
       chosen,
     ),
     state,
@@ -112,6 +111,12 @@ function acceptDrops(target: HTMLElement, take: (file: File | undefined) => Prom
 async function copyLink(desk: Desk): Promise<void> {
   const { model, shown } = desk.session;
   const fragment = await fragmentOf({ state: model.save(), shown });
+  const length = location.href.replace(/#.*/, '').length + fragment.length;
+  if (length > MOST_ADDRESS) {
+    const size = length.toLocaleString('en-US');
+    desk.say(`An address of this moment would have ${size} characters: download its state.`, true);
+    return;
+  }
   history.replaceState(undefined, '', fragment);
   try {
     await navigator.clipboard.writeText(location.href);

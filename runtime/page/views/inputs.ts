@@ -26,7 +26,7 @@ export function inputPanel(desk: Desk): View {
       port,
       control,
       update,
-      root: element('div', { class: 'row input' }, root, control.root),
+      root: element('div', { class: 'row' }, root, control.root),
     };
   });
   const none = element('p', { class: 'quiet' }, 'There is no input.');
@@ -130,19 +130,39 @@ function bitChoice(port: PortLayout, set: (value: Value) => void): Control {
 function wordControl(desk: Desk, port: PortLayout, set: (value: Value) => void): Control {
   const { name, width } = port;
   const hasX = desk.session.threeValued;
+  const id = freshId();
   const field = element('input', { type: 'text', 'aria-label': name, spellcheck: 'false' });
   field.size = Math.min(34, Math.max(6, Math.ceil(width / 4) + 3));
+  const problem = element('span', { id, class: 'problem' });
+  // The value beside a text that was refused; undefined where none was.
+  let kept: string | undefined;
+  const accept = (text: string): void => {
+    kept = undefined;
+    field.value = text;
+    field.removeAttribute('aria-invalid');
+    field.removeAttribute('aria-describedby');
+    setText(problem, '');
+  };
+  const refuse = (): void => {
+    kept = shownValue(desk.session.model.read(name), width, desk.base);
+    field.setAttribute('aria-invalid', 'true');
+    field.setAttribute('aria-describedby', id);
+    const form = `${name} takes ${width} bits, as in 12, 0x1f or 0b101${hasX ? ' or 0b1x0' : ''}`;
+    setText(problem, `${form}; it is still ${kept}.`);
+    desk.say(`${form}; it is still ${kept}.`, true);
+  };
   const commit = (): void => {
     const value = typedValue(field.value, width, hasX);
-    field.setAttribute('aria-invalid', `${value === undefined}`);
-    if (value !== undefined) set(value);
-    else
-      desk.say(
-        `${name} takes ${width} bits, as in 12, 0x1f or 0b101${hasX ? ' or 0b1x0' : ''}.`,
-        true,
-      );
+    if (value === undefined) refuse();
+    else {
+      accept(shownValue(value, width, desk.base));
+      set(value);
+    }
   };
   field.addEventListener('change', commit);
+  field.addEventListener('keydown', ({ key }) => {
+    if (key === 'Escape') accept(shownValue(desk.session.model.read(name), width, desk.base));
+  });
   const known = (value: Value): bigint => (typeof value === 'string' ? 0n : BigInt(value));
   const setBits = (bits: bigint): void => set(width <= 32 ? Number(bits) : bits);
   const move = (by: bigint): void => {
@@ -160,20 +180,21 @@ function wordControl(desk: Desk, port: PortLayout, set: (value: Value) => void):
   });
   const root = element(
     'span',
-    { class: 'control' },
+    { class: width > MOST_COUNTED ? 'control wide' : 'control' },
     field,
     // Nobody counts through more than these.
     ...(width <= MOST_COUNTED ? [less, more] : []),
-    element('span', { class: 'bits' }, ...bits.map((toggle) => toggle.root)),
+    ...(bits.length > 0
+      ? [element('span', { class: 'bits' }, ...bits.map(({ root }) => root))]
+      : []),
+    problem,
   );
   return {
     root,
     show: (value, isDriven) => {
       const text = shownValue(value, width, desk.base);
-      if (document.activeElement !== field && field.value !== text) {
-        field.value = text;
-        field.removeAttribute('aria-invalid');
-      }
+      const isEdited = document.activeElement === field || text === kept;
+      if (!isEdited && field.value !== text) accept(text);
       for (const control of [field, less, more]) control.disabled = isDriven;
       for (const { bit, show } of bits) show(((known(value) >> BigInt(bit)) & 1n) === 1n, isDriven);
     },

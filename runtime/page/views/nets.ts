@@ -7,8 +7,9 @@ import { shownToggle } from './shownToggle.js';
 /** More rows than these are not laid out under one heading or found by one search. */
 const MOST_ROWS = 300;
 
-interface Row {
-  readonly root: HTMLElement;
+/** Some rows and what is folded open among them. */
+interface Branch {
+  readonly elements: readonly HTMLElement[];
   update(): void;
 }
 
@@ -20,7 +21,6 @@ interface Folder {
 /** Registers and kept nets as the hierarchy has them; what is folded away costs nothing. */
 export function netPanel(desk: Desk): View {
   const nets = desk.session.signals.filter(({ kind }) => kind === 'net');
-  const open = new Set<Row[]>();
   const tree = element('div', { class: 'tree' });
   const search = element('input', {
     type: 'search',
@@ -28,30 +28,31 @@ export function netPanel(desk: Desk): View {
     'aria-label': 'find registers and nets by name',
   });
   const count = element('span', { class: 'quiet', 'aria-live': 'polite' });
+  let shown: Branch;
   const rebuild = (): void => {
-    open.clear();
     const wanted = search.value.trim().toLowerCase();
     const found = nets.filter(({ name }) => name.toLowerCase().includes(wanted));
-    setText(count, wanted === '' ? '' : `${found.length} found`);
-    if (wanted !== '') tree.replaceChildren(...rowsOf(desk, found, '', open));
-    else tree.replaceChildren(...folderContent(desk, treeOf(nets), '', open));
+    setText(count, wanted === '' ? '' : `${found.length.toLocaleString('en-US')} found`);
+    shown = wanted === '' ? branchOf(desk, treeOf(nets), '') : listOf(desk, found, '');
+    tree.classList.toggle('found', wanted !== '');
+    tree.replaceChildren(...shown.elements);
     desk.refresh();
   };
   search.addEventListener('input', rebuild);
   rebuild();
+  const none = 'There are no registers and no kept nets that are not ports.';
   const root = element(
     'section',
     { 'aria-labelledby': 'nets' },
     element('h2', { id: 'nets' }, 'Inside'),
     ...(nets.length > 0
-      ? [element('p', { class: 'row' }, search, count), tree]
-      : [element('p', { class: 'quiet' }, 'This model has no state and no kept nets.')]),
+      ? [element('p', { class: 'search' }, search, count), tree]
+      : [element('p', { class: 'quiet' }, none)]),
   );
   return {
     root,
     update: () => {
-      if (desk.session.fault !== undefined) return;
-      for (const rows of open) for (const row of rows) row.update();
+      if (desk.session.fault === undefined) shown.update();
     },
   };
 }
@@ -73,48 +74,40 @@ function treeOf(nets: readonly Signal[]): Folder {
   return root;
 }
 
-function folderContent(
-  desk: Desk,
-  { children, signals }: Folder,
-  path: string,
-  open: Set<Row[]>,
-): HTMLElement[] {
-  const folders = Array.from(children, ([name, folder]) => {
-    const inside = element('div', { class: 'tree' });
-    const details = element('details', {}, element('summary', {}, name), inside);
-    const own: Set<Row[]> = new Set();
-    details.addEventListener('toggle', () => {
-      for (const rows of own) open.delete(rows);
-      own.clear();
-      if (details.open)
-        inside.replaceChildren(...folderContent(desk, folder, `${path}${name}.`, own));
-      else inside.replaceChildren();
-      for (const rows of own) open.add(rows);
-      desk.refresh();
-    });
-    return details;
+function branchOf(desk: Desk, { children, signals }: Folder, path: string): Branch {
+  const list = listOf(desk, signals, path);
+  const folders = Array.from(children, ([name, folder]) =>
+    folderOf(desk, folder, name, `${path}${name}.`),
+  );
+  return joined(list, ...folders);
+}
+
+/** A folder that is laid out when it is opened. */
+function folderOf(desk: Desk, folder: Folder, name: string, path: string): Branch {
+  const inside = element('div', { class: 'tree' });
+  const details = element('details', {}, element('summary', {}, name), inside);
+  let content: Branch | undefined;
+  details.addEventListener('toggle', () => {
+    content = details.open ? branchOf(desk, folder, path) : undefined;
+    inside.replaceChildren(...(content?.elements ?? []));
+    desk.refresh();
   });
-  return [...rowsOf(desk, signals, path, open), ...folders];
+  return { elements: [details], update: () => content?.update() };
 }
 
-function rowsOf(
-  desk: Desk,
-  signals: readonly Signal[],
-  path: string,
-  open: Set<Row[]>,
-): HTMLElement[] {
+function listOf(desk: Desk, signals: readonly Signal[], path: string): Branch {
   const rows = signals.slice(0, MOST_ROWS).map((signal) => rowOf(desk, signal, path));
-  open.add(rows);
   const rest = signals.length - rows.length;
-  const more = element('p', { class: 'quiet' }, `and ${rest} more: find them by name`);
-  return [...rows.map(({ root }) => root), ...(rest > 0 ? [more] : [])];
+  if (rest === 0) return joined(...rows);
+  const words = `and ${rest.toLocaleString('en-US')} more: find them by name`;
+  return joined(...rows, { elements: [element('p', { class: 'quiet' }, words)], update: () => {} });
 }
 
-function rowOf(desk: Desk, { name, width }: Signal, path: string): Row {
-  const value = element('output', { class: 'value' });
+function rowOf(desk: Desk, { name, width }: Signal, path: string): Branch {
+  const value = element('span', { class: 'value' });
   const { root, update } = shownToggle(desk, name, name.slice(path.length));
   return {
-    root: element('div', { class: 'row' }, root, value),
+    elements: [element('div', { class: 'row' }, root, value)],
     update: () => {
       const now = desk.session.model.peek(name);
       setText(value, shownValue(now, width, desk.base));
@@ -123,3 +116,10 @@ function rowOf(desk: Desk, { name, width }: Signal, path: string): Row {
     },
   };
 }
+
+const joined = (...parts: readonly Branch[]): Branch => ({
+  elements: parts.flatMap(({ elements }) => elements),
+  update: () => {
+    for (const part of parts) part.update();
+  },
+});

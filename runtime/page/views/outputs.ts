@@ -7,7 +7,7 @@ import { shownToggle } from './shownToggle.js';
 export function outputPanel(desk: Desk): View {
   const { model } = desk.session;
   const rows = model.outputs.map((port) => {
-    const value = element('output', { class: port.width === 1 ? 'value lamp' : 'value' });
+    const value = element('span', { class: port.width === 1 ? 'value lamp' : 'value' });
     const { root, update } = shownToggle(desk, port.name);
     return { port, value, update, root: element('div', { class: 'row' }, root, value) };
   });

@@ -12,7 +12,7 @@ export function shownToggle(
     desk.session.show(name, box.checked);
     desk.refresh();
   });
-  const root = element('span', { class: 'name' }, box, element('span', { title: name }, text));
+  const root = element('label', { class: 'name' }, box, element('span', { title: name }, text));
   return {
     root,
     update: () => {

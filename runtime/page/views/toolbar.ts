@@ -22,11 +22,11 @@ export function toolbar(desk: Desk): View {
     value: 100,
     'aria-label': 'cycles in a leap',
   });
-  const cycle = element('output', { class: 'number' });
+  const cycle = element('span', { class: 'number' });
   const rate = element('span', { class: 'quiet' });
   const leap = (): void => {
     const cycles = Number(count.value);
-    if (Number.isInteger(cycles) && cycles > 0 && cycles <= 1_000_000) desk.step(cycles);
+    if (Number.isInteger(cycles) && cycles > 0 && cycles <= 1_000_000) desk.leap(cycles);
     else desk.say('Give a whole number of cycles, from 1 to 1,000,000.', true);
   };
   const root = element(
@@ -41,8 +41,8 @@ export function toolbar(desk: Desk): View {
       count,
       button('Reset', () => desk.reset()),
     ),
-    element('div', { class: 'group' }, ...rateChoice(desk), ...baseChoice(desk)),
-    element('div', { class: 'group where' }, element('span', {}, 'cycle '), cycle, rate),
+    element('div', { class: 'group' }, rateChoice(desk), baseChoice(desk)),
+    element('div', { class: 'group where' }, rate, element('span', {}, 'cycle '), cycle),
   );
   return {
     root,
@@ -54,7 +54,7 @@ export function toolbar(desk: Desk): View {
   };
 }
 
-function rateChoice(desk: Desk): HTMLElement[] {
+function rateChoice(desk: Desk): HTMLElement {
   const id = freshId();
   const choice = element(
     'select',
@@ -65,10 +65,10 @@ function rateChoice(desk: Desk): HTMLElement[] {
   choice.addEventListener('change', () => {
     desk.rate = RATES[Number(choice.value)]![1];
   });
-  return [element('label', { for: id }, 'Rate'), choice];
+  return element('span', { class: 'pair' }, element('label', { for: id }, 'Rate'), choice);
 }
 
-function baseChoice(desk: Desk): HTMLElement[] {
+function baseChoice(desk: Desk): HTMLElement {
   const id = freshId();
   const names: Record<Base, string> = { hex: 'hexadecimal', decimal: 'decimal', binary: 'binary' };
   const choice = element(
@@ -80,7 +80,7 @@ function baseChoice(desk: Desk): HTMLElement[] {
     desk.base = choice.value as Base;
     desk.refresh();
   });
-  return [element('label', { for: id }, 'Numbers'), choice];
+  return element('span', { class: 'pair' }, element('label', { for: id }, 'Numbers'), choice);
 }
 
 function rateText(perSecond: number): string {

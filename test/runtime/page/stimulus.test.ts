@@ -38,6 +38,7 @@ describe.each([false, true])('a stimulus table read in the page (x: %s)', (three
 
   it.each([
     ['', 't.csv: the table is empty'],
+    ['a,v\n', 't.csv:1: no row follows the header'],
     ['b\n1\n', 't.csv:1: there is no input b; there are: a, v, w'],
     ['v[9]\n1\n', 't.csv:1: v[9] is not within [7:0]'],
     ['a\n1,0\n', 't.csv:2: 2 fields, expected 1'],
