@@ -13,6 +13,7 @@ export interface PackedSignals {
   readonly msb: Int32Array;
   readonly lsb: Int32Array;
   readonly isVector: Uint8Array;
+  readonly isSigned: Uint8Array;
   readonly offset: Uint32Array;
   readonly width: Uint32Array;
 }
@@ -76,15 +77,17 @@ function packSignals(signals: LazyList<Signal>): PackedSignals {
     msb: new Int32Array(count),
     lsb: new Int32Array(count),
     isVector: new Uint8Array(count),
+    isSigned: new Uint8Array(count),
     offset: new Uint32Array(count),
     width: new Uint32Array(count),
   };
   let index = 0;
-  for (const { name, msb, lsb, isVector, offset, width } of signals) {
+  for (const { name, msb, lsb, isVector, isSigned, offset, width } of signals) {
     names.push(name);
     packed.msb[index] = msb;
     packed.lsb[index] = lsb;
     packed.isVector[index] = Number(isVector);
+    packed.isSigned[index] = Number(isSigned ?? false);
     packed.offset[index] = offset;
     packed.width[index++] = width;
   }
@@ -136,12 +139,13 @@ class SignalList extends MadeList<Signal> {
   }
 
   protected make(index: number): Signal {
-    const { msb, lsb, isVector, offset, width } = this.#signals;
+    const { msb, lsb, isVector, isSigned, offset, width } = this.#signals;
     return {
       name: this.#names.at(index)!,
       msb: msb[index]!,
       lsb: lsb[index]!,
       isVector: isVector[index] === 1,
+      ...(isSigned[index] === 1 && { isSigned: true }),
       offset: offset[index]!,
       width: width[index]!,
     };

@@ -26,6 +26,11 @@ export const GateKind = {
   Mux: 14,
   /** Bit of a word that a memory port reads, see `Memory`; its fan-in is the port's address. */
   MemoryRead: 15,
+  /**
+   * Whether two nets have the same value, x as a value of its own (the operator === of IEEE 1364).
+   * No part of a circuit can tell: only what looks at one has such gates, and nothing reads these.
+   */
+  CaseEqual: 16,
 } as const;
 
 /** One of the numbers in the table `GateKind`. */
@@ -77,6 +82,11 @@ export const gateTable: Readonly<Record<GateKind, GateInfo>> = {
   [GateKind.Xor]: folding('xor', 'xor', false),
   [GateKind.Xnor]: folding('xnor', 'xor', true),
   [GateKind.Mux]: { name: 'mux', role: 'gate', minFanin: 3, maxFanin: 3 },
+  // With two values it is as good as an xnor.
+  [GateKind.CaseEqual]: {
+    ...{ name: 'caseEqual', role: 'gate', minFanin: 2, maxFanin: 2 },
+    fold: { operation: 'xor', inverted: true },
+  },
   [GateKind.MemoryRead]: { name: 'memoryRead', role: 'memory', minFanin: 1, maxFanin: UNBOUNDED },
 };
 

@@ -8,6 +8,8 @@ export interface Signal {
   readonly msb: number;
   readonly lsb: number;
   readonly isVector: boolean;
+  /** Set where it is declared signed, or an integer. */
+  readonly isSigned?: boolean;
   /** Place of the signal's rightmost (least significant) bit in the module's list of bits. */
   readonly offset: number;
   readonly width: number;

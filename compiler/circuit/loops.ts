@@ -43,11 +43,15 @@ export function loopsOf(circuit: Circuit): Loops {
 }
 
 /**
- * Lets a circuit that differs from another in its output ports alone settle its loops in the same
- * order: what else is looked at must not change what a loop does, nor what it remembers.
+ * Lets a circuit settle its loops in the same order as another one, from which it differs in output
+ * ports and in nets behind the others alone: what else is looked at must not change what a loop
+ * does, nor what it remembers.
  */
 export function shareLoops(from: Circuit, to: Circuit): void {
-  known.set(to, loopsOf(from));
+  const loops = loopsOf(from);
+  const loopOf = new Int32Array(to.netCount).fill(-1);
+  loopOf.set(loops.loopOf);
+  known.set(to, to.netCount === from.netCount ? loops : { ...loops, loopOf });
 }
 
 // Strongly connected components of the settling logic.

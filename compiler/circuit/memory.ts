@@ -43,11 +43,21 @@ export interface WritePort {
   readonly mask: Uint32Array | undefined;
 }
 
+/** How the words of a memory are declared. */
+export interface WordForm {
+  /** Declared left and right index of the bits. */
+  readonly msb: number;
+  readonly lsb: number;
+  readonly isSigned: boolean;
+}
+
 /** What a memory is, whatever its ports. */
 export interface MemoryShape {
   /** Full hierarchical name. */
   readonly name: string;
   readonly width: number;
+  /** `[width-1:0]` and unsigned unless given. */
+  readonly word?: WordForm;
   /** Outermost first; the last one counts fastest in the order of the words. */
   readonly indices: readonly MemoryIndex[];
   /**

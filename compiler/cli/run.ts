@@ -39,6 +39,7 @@ import {
   responseOutlets,
 } from './run/responseOptions.js';
 import { addStimulusOptions, type StimulusOptions } from './run/stimulusOptions.js';
+import { addStopOptions, type StopOptions, stopsOf } from './run/stopOptions.js';
 import {
   addWaveOptions,
   addWindowOptions,
@@ -61,6 +62,7 @@ export interface RunOptions
     CacheOptions,
     StimulusOptions,
     PeriodOptions,
+    StopOptions,
     WaveOptions,
     ActivityOptions,
     RecordOptions,
@@ -81,6 +83,7 @@ export function runCommand(
   );
   addStimulusOptions(command);
   addPeriodOptions(command);
+  addStopOptions(command);
   addResponseOptions(command);
   addExpectationOptions(command);
   addWindowOptions(addWaveOptions(command), false);
@@ -111,8 +114,8 @@ before, a column @cycles tells how long a row lasts. The clock ticks by itself a
 no column. An expectation table has any of the columns of a response. Other forms, with
 examples of modules, are in the README under Streams.
 
-Exit status: 0 done and as expected, 1 done and a departure found or interrupted,
-2 an input or the request is wrong, or a cycle has no result.
+Exit status: 0 done and as expected, 1 done and a departure found, stopped by a condition
+or interrupted, 2 an input or the request is wrong, or a cycle has no result.
 
 Examples:
   clockstride run lock.v --stimulus boats.csv --cycles 2000000 --expect lights.csv
@@ -121,6 +124,7 @@ Examples:
     --expect-netlist mapped.v cells.lib
   clockstride run lock.v --stimulus boats.csv --cycles 300 --picture lock.svg
   clockstride run lock.v --random 1 --cycles 100_000_000_000 --record lock.record
+  clockstride run lock.v --random 1 --stop-when 'timer == 12 && state[3]' --stop-after 1000
   clockstride run counter.v --find-period`;
 
 /** Runs what a command line says. `resumed` opens the record of a run that is gone on with. */
@@ -148,6 +152,7 @@ export async function run(
     ...(emitter && { emitter }),
   });
   const waves = [...waveOutlets(design, options), ...activityOutlets(design, options, emitter)];
+  const stops = stopsOf(design, options, options.record);
   const interrupt = new AbortController();
   process.once('SIGINT', () => {
     interrupt.abort();
@@ -162,7 +167,7 @@ export async function run(
     ...(session?.from && { from: session.from.cycle }),
     interrupt: interrupt.signal,
   });
-  const summary = await runDesign(design, {
+  const summary = await runDesign(stops.design, {
     stimulus,
     ...(cycles !== undefined && { cycles }),
     ...(session && { recorder: session.recorder }),
@@ -170,7 +175,7 @@ export async function run(
     engine: options.engine,
     powerUp,
     seed: options.seed,
-    outlets: [...outlets, ...judges, ...waves, ...writers],
+    outlets: [...outlets, ...stops.outlets, ...judges, ...waves, ...writers],
     notes,
     interrupt: interrupt.signal,
     // Not before: where a table is wrong, that is all there is to say.
@@ -179,7 +184,7 @@ export async function run(
       if (options.powerUp === undefined) warnOfStart(design);
     },
     ...(emitter && { emitter }),
-    ...(cache && id !== undefined && { models: new ModelCache(cache.store, id) }),
+    ...(cache && id !== undefined && { models: new ModelCache(cache.store, id + stops.key) }),
   })
     .catch((error) => failed(error, session, options.response))
     // What it still compiles is not worth waiting for.

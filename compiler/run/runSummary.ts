@@ -20,7 +20,12 @@ export interface RunSummary {
   /** How many departures there were, where all were asked for. */
   readonly mismatches?: number;
   /** Set where the run ended before its last cycle. */
-  readonly stopped?: { readonly cycle: number; readonly reason: string };
+  readonly stopped?: {
+    readonly cycle: number;
+    readonly reason: string;
+    /** The condition that has ended it, as it was written. */
+    readonly condition?: string;
+  };
   /** How the states come again, where that was looked for and found. */
   readonly repetition?: { readonly leadIn: number; readonly period: number };
   /** State elements that are x at the end of a three-valued run. */
@@ -40,13 +45,20 @@ const SHOWN = 20;
 /** Why a run stopped that the user has stopped. */
 export const INTERRUPTED = 'interrupted';
 
-/** What the command ends with: 1 where a run departs from what is expected or was interrupted. */
+/**
+ * What the command ends with: 1 where a run departs from what is expected, has met a condition that
+ * ends it, or was interrupted.
+ */
 export const exitStatus = (summary: RunSummary): 0 | 1 =>
   summary.mismatch !== undefined ||
-  summary.stopped?.reason === INTERRUPTED ||
+  isTold(summary) ||
   summary.signature !== (summary.expectedSignature ?? summary.signature)
     ? 1
     : 0;
+
+// Other ends have lines of their own.
+const isTold = ({ stopped }: RunSummary): boolean =>
+  stopped?.condition !== undefined || stopped?.reason === INTERRUPTED;
 
 /** A summary as lines of text. `expectation` names what the run was compared with. */
 export function summaryText(summary: RunSummary, expectation: string | undefined): string {
@@ -61,8 +73,8 @@ export function summaryText(summary: RunSummary, expectation: string | undefined
   lines.push(...busLines(summary.buses ?? []));
   lines.push(...activityLines(summary.activity));
   for (const note of summary.notes) lines.push(`note: ${note}`);
-  if (summary.stopped?.reason === INTERRUPTED) {
-    lines.push(`stopped at cycle ${summary.stopped.cycle}: ${summary.stopped.reason}`);
+  if (summary.stopped !== undefined && isTold(summary)) {
+    lines.push(`stopped at cycle ${count(summary.stopped.cycle)}: ${summary.stopped.reason}`);
   }
   if (expectation !== undefined) lines.push(verdict(summary, expectation));
   return lines.join('\n');

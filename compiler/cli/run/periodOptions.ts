@@ -5,6 +5,7 @@ import { PeriodSearch } from '../../period/periodSearch.js';
 import { allRows, repeatedRows } from '../../run/repeatedRows.js';
 import { UsageError } from '../usageError.js';
 import { type ChosenStimulus, type StimulusOptions, stimulusOf } from './stimulusOptions.js';
+import type { StopOptions } from './stopOptions.js';
 
 /** Whether the stimulus comes again, and whether states are looked for that do. */
 export interface PeriodOptions {
@@ -37,16 +38,20 @@ export interface ChosenCourse extends ChosenStimulus {
  */
 export async function courseOf(
   design: Design,
-  options: StimulusOptions & PeriodOptions,
+  options: StimulusOptions & PeriodOptions & StopOptions,
   { from = 0, interrupt }: { readonly from?: number; readonly interrupt?: AbortSignal } = {},
 ): Promise<ChosenCourse> {
   const { repeat, findPeriod, stimulus: path } = options;
   if (repeat && path === undefined) {
     throw new UsageError('error: --repeat is for --stimulus FILE, which is missing');
   }
-  const cycles = options.cycles ?? (findPeriod ? Number.MAX_SAFE_INTEGER : undefined);
+  // Something else will end it.
+  const isOpen = findPeriod || (options.stopWhen !== undefined && (path === undefined || repeat));
+  const cycles = options.cycles ?? (isOpen ? Number.MAX_SAFE_INTEGER : undefined);
   if (repeat && cycles === undefined) {
-    throw new UsageError('error: --repeat has no end; say how long to run with --cycles N');
+    throw new UsageError(
+      'error: --repeat has no end; say how long to run with --cycles N, or --stop-when',
+    );
   }
   const endless = cycles === undefined ? {} : { cycles };
   const chosen = await stimulusOf(design, { ...options, ...endless }, repeat ? 0 : from);

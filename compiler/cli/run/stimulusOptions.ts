@@ -93,7 +93,9 @@ export async function stimulusOf(
     };
   }
   if (cycles === undefined) {
-    throw new UsageError('error: without a stimulus, say how long to run with --cycles N');
+    throw new UsageError(
+      'error: without a stimulus, say how long to run with --cycles N, or --stop-when',
+    );
   }
   const { layout } = design;
   if (random !== undefined) {

@@ -67,6 +67,8 @@ export class Evaluator {
         return NOT[this.#fold(net, XOR)]!;
       case GateKind.Mux:
         return this.#mux(net);
+      case GateKind.CaseEqual:
+        return this.#caseEqual(net);
       case GateKind.MemoryRead:
         return this.#memories.read(net);
       default:
@@ -122,6 +124,12 @@ export class Evaluator {
       result = table[result * 3 + this.#value[fanin[i]!]!]!;
     }
     return result;
+  }
+
+  #caseEqual(net: number): number {
+    const { faninStart, fanin } = this.#circuit;
+    const first = faninStart[net]!;
+    return this.#value[fanin[first]!] === this.#value[fanin[first + 1]!] ? 1 : 0;
   }
 
   #mux(net: number): number {

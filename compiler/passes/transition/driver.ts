@@ -39,6 +39,8 @@ export function driverValue(
       return latchValue(context, net, value, held);
     case GateKind.Mux:
       return muxValue(context, net, value);
+    case GateKind.CaseEqual:
+      return caseEqualValue(context, net, value);
     case GateKind.MemoryRead:
       return context.memories.read(net, value, context.writes);
     default:
@@ -95,6 +97,15 @@ function muxValue(
   if (select === algebra.zero) return value(fanin[at + 1]!);
   if (select === algebra.one) return value(fanin[at + 2]!);
   return algebra.mux(select, value(fanin[at + 1]!), value(fanin[at + 2]!));
+}
+
+function caseEqualValue(
+  { circuit: { faninStart, fanin }, algebra }: DriverContext,
+  net: number,
+  value: (net: number) => NetValue,
+): NetValue {
+  const at = faninStart[net]!;
+  return algebra.not(algebra.differs(value(fanin[at]!), value(fanin[at + 1]!)));
 }
 
 // Wide gates become balanced trees: short paths for the processor to overlap.

@@ -92,6 +92,11 @@ export interface HeldMemory {
  * to a port counts as undriven while only the outside drives it.
  */
 export interface GateSink {
+  /**
+   * Set where gates only look at a circuit of two or three values: x is then exactly what IEEE 1364
+   * makes of it, which hardware need not be, and `GateKind.CaseEqual` may be used.
+   */
+  readonly looksAt?: 'twoValues' | 'threeValues';
   /** Sets the origin of what is built next: index of a source in the map, byte offset in it. */
   at(sourceIndex: number, offset: number): void;
   /** A new net without driver. */

@@ -62,6 +62,8 @@ export interface Stop {
   readonly lastCycle: number;
   /** Why, to be read after "stopped at cycle 12: ". */
   readonly reason: string;
+  /** The condition that was waited for, where that is why. */
+  readonly condition?: string;
 }
 
 /** How a run ended. */

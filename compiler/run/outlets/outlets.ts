@@ -80,7 +80,8 @@ export class Outlets {
       const stop = taken instanceof Promise ? await taken : taken;
       if (stop === undefined) continue;
       cut = this.#nets.cut(cut, stop.lastCycle - firstCycle + 1);
-      this.stopped = { cycle: stop.lastCycle, reason: stop.reason };
+      const { lastCycle: cycle, ...why } = stop;
+      this.stopped = { cycle, ...why };
     }
     this.cycles = firstCycle + cut.cycles;
   }

@@ -177,7 +177,8 @@ function lowerUnary(
   if (operator === '~') return invert(lower(operand, context, width, signed), logic);
   if (operator === '-') {
     const bits = lower(operand, context, width, signed);
-    return hasUnknown(bits, logic) ? unknownBits(width, logic) : negate(bits, logic);
+    if (hasUnknown(bits, logic)) return unknownBits(width, logic);
+    return logic.strictly(negate(bits, logic), bits);
   }
   return resize([reduce(operator, lowerSelf(operand, context), context)], width, false, logic);
 }

@@ -1,7 +1,7 @@
 import type { NetId } from '../../../circuit/ids.js';
 import type { Constant, Scope } from '../scope.js';
 import type { Expression } from '../syntax.js';
-import { lowerAssigned, lowerSelf } from './expressions.js';
+import { lowerAssigned, lowerCondition, lowerSelf } from './expressions.js';
 import { lowerFloating, mayFloat } from './floating.js';
 import type { FloatingBits } from './floatingBits.js';
 import { expressionContext, withConstants } from './process.js';
@@ -43,6 +43,12 @@ export function lowerExpression(
   return targetWidth === undefined
     ? [...lowerSelf(expression, context)]
     : [...lowerAssigned(expression, context, targetWidth)];
+}
+
+/** Builds the gates of an expression as that of a condition; returns a net that is 1 where it holds. */
+export function lowerTruth(expression: Expression, scope: Scope): NetId {
+  scope.shared.budget.begin(expression);
+  return lowerCondition(expression, expressionContext(scope));
 }
 
 /**

@@ -144,6 +144,33 @@ export class Logic {
     return this.#gate(GateKind.Mux, [select, whenZero, whenOne]);
   }
 
+  /** Whether gates only look at a circuit; see `GateSink.looksAt`. */
+  get isLooking(): boolean {
+    return this.sink.looksAt !== undefined;
+  }
+
+  /** Whether two bits are the same, x as a value of its own; only for logic that is looking. */
+  same(a: NetId, b: NetId): NetId {
+    if (a === b) return this.one;
+    const [first, second] = [this.valueOf(a), this.valueOf(b)];
+    if (first !== undefined && second !== undefined) return this.constant(first === second ? 1 : 0);
+    if (this.sink.looksAt === 'threeValues') return this.#gate(GateKind.CaseEqual, sorted([a, b]));
+    return first === X || second === X ? this.zero : this.xnor(a, b);
+  }
+
+  /**
+   * A result that is x in all its bits where any bit of the operands is x (clause 5.1.5); as it is
+   * where logic is part of a circuit, whose gates may know more.
+   */
+  strictly(result: Bits, ...operands: readonly Bits[]): Bits {
+    if (this.sink.looksAt !== 'threeValues') return result;
+    // a ^ a is 0, and x where a is.
+    const open = operands.flat().filter((net) => this.valueOf(net) === undefined);
+    if (open.length === 0) return result;
+    const poison = this.any(open.map((net) => this.xor(net, net)));
+    return result.map((net) => this.xor(net, poison));
+  }
+
   // And with its dominating 0, or with its dominating 1.
   #dominated(kind: GateKind, inputs: Bits, dominating: 0 | 1): NetId {
     const rest: NetId[] = [];

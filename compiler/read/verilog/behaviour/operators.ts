@@ -39,7 +39,18 @@ export function applyContext(
   const constant = bothKnown(operator, left, right, shape, shape, logic);
   if (constant !== undefined) return constant;
   if (hasUnknown(left, logic) || hasUnknown(right, logic)) return unknownBits(left.length, logic);
-  switch (operator) {
+  return logic.strictly(arithmetic(expression, left, right, signed, context), left, right);
+}
+
+function arithmetic(
+  expression: BinaryExpression,
+  left: Bits,
+  right: Bits,
+  signed: boolean,
+  context: Context,
+): Bits {
+  const { logic } = context;
+  switch (expression.operator) {
     case '+':
       return add(left, right, logic.zero, logic);
     case '-':
@@ -48,7 +59,7 @@ export function applyContext(
       return multiply(left, right, logic);
     default: {
       const both = division(expression, left, right, signed, context);
-      return operator === '/' ? both.quotient : both.remainder;
+      return expression.operator === '/' ? both.quotient : both.remainder;
     }
   }
 }
@@ -62,16 +73,20 @@ export function applyShift(
   context: Context,
 ): Bits {
   const { logic } = context;
+  const shifted = (direction: 'left' | 'right', fill: NetId): Bits =>
+    logic.strictly(shift(left, right, direction, fill, logic), right);
   switch (expression.operator) {
     case '<<':
     case '<<<':
-      return shift(left, right, 'left', logic.zero, logic);
+      return shifted('left', logic.zero);
     case '>>':
-      return shift(left, right, 'right', logic.zero, logic);
+      return shifted('right', logic.zero);
     case '>>>':
-      return shift(left, right, 'right', signed ? left[left.length - 1]! : logic.zero, logic);
-    default:
-      return power(expression, left, right, { signed, exponent }, context);
+      return shifted('right', signed ? left[left.length - 1]! : logic.zero);
+    default: {
+      const result = power(expression, left, right, { signed, exponent }, context);
+      return logic.strictly(result, left, right);
+    }
   }
 }
 
@@ -96,7 +111,17 @@ export function applyCompare(
   }
   // An x makes an ordering x as a whole (clause 5.1.7).
   if (hasUnknown(left, logic) || hasUnknown(right, logic)) return logic.unknown;
-  switch (expression.operator) {
+  return logic.strictly([ordering(expression, left, right, signed, logic)], left, right)[0]!;
+}
+
+function ordering(
+  { operator }: BinaryExpression,
+  left: Bits,
+  right: Bits,
+  signed: boolean,
+  logic: Logic,
+): NetId {
+  switch (operator) {
     case '<':
       return less(left, right, signed, logic);
     case '>':
@@ -108,7 +133,7 @@ export function applyCompare(
   }
 }
 
-// Case equality compares x as a value of its own. Gates cannot; constants can.
+// Case equality compares x as a value of its own. A circuit cannot; constants can.
 function identical(expression: BinaryExpression, left: Bits, right: Bits, context: Context): NetId {
   const { logic } = context;
   const a = knownOf(left, logic);
@@ -116,6 +141,7 @@ function identical(expression: BinaryExpression, left: Bits, right: Bits, contex
   if (a !== undefined && b !== undefined) {
     return logic.constant(a.value === b.value && a.unknown === b.unknown ? 1 : 0);
   }
+  if (logic.isLooking) return logic.all(left.map((net, i) => logic.same(net, right[i]!)));
   if (hasUnknown(left, logic) || hasUnknown(right, logic)) {
     refuse(
       context,

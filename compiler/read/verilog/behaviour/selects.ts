@@ -47,7 +47,7 @@ export function readSelect(expression: SelectExpression, context: Context): Bits
   if (index.kind === 'constant') {
     return readFrom(vector, positionOf(vector, index.value), 1, expression, context);
   }
-  return readMoving(vector, index, 0, 1, context.logic);
+  return context.logic.strictly(readMoving(vector, index, 0, 1, context.logic), index.bits);
 }
 
 /** The value of a part select. */
@@ -56,7 +56,10 @@ export function readPart(expression: PartExpression, context: Context): Bits {
   if (part === undefined) return unknownBits(shapeOf(expression, context).width, context.logic);
   const { vector, width, index, offset } = part;
   if (index.kind === 'unknown') return unknownBits(width, context.logic);
-  if (index.kind === 'variable') return readMoving(vector, index, offset, width, context.logic);
+  if (index.kind === 'variable') {
+    const moving = readMoving(vector, index, offset, width, context.logic);
+    return context.logic.strictly(moving, index.bits);
+  }
   return readFrom(vector, positionOf(vector, index.value) + offset, width, expression, context);
 }
 
@@ -178,7 +181,8 @@ function readWord(select: WordSelect, context: Context): Bits | undefined {
   }
   if (word !== undefined) return memory.words[word]!.map((net) => context.store.read(net));
   if (!withinMemoryLimit(select, context)) return undefined;
-  return readNets(memory, values, context);
+  const indices = values.flatMap((value) => (value.kind === 'variable' ? [value.bits] : []));
+  return context.logic.strictly(readNets(memory, values, context), ...indices);
 }
 
 /** Bits from a fixed place on; x, and a warning, for those that are not there. */

@@ -1,4 +1,4 @@
-import { addressBits } from '../../../circuit/memory.js';
+import { addressBits, type WordForm } from '../../../circuit/memory.js';
 import { memoryIndex } from '../behaviour/heldMemory.js';
 import { InitialContents } from '../initialContents.js';
 import type { HeldMemory, IndexRange } from '../scope.js';
@@ -46,12 +46,13 @@ export function heldMemory(
   { builder, names, arrayPositions }: ModuleBody,
   { index: block }: BlockScope,
   { width, indices: ranges }: ArraySize,
+  word: WordForm,
   { name, start }: DeclaredName,
 ): HeldMemory {
   const indices = ranges.map(memoryIndex);
   const contents = new InitialContents(width, wordsOf(ranges));
   const text = names.text(name);
-  const number = builder.memory({ name: text, block, width, indices, contents });
+  const number = builder.memory({ name: text, block, width, word, indices, contents });
   arrayPositions.push(start);
   return { number, indices, contents, position: start };
 }

@@ -57,10 +57,13 @@ class NameCollector {
     const { symbols } = this.#block;
     const { signals, nets } = this;
     const offset = signals.bits;
-    const isVector = (symbols.flags(symbol) & Flag.Vector) !== 0;
-    if (!isVector && text === undefined) signals.pushScalar(symbols.name(symbol));
+    const flags = symbols.flags(symbol);
+    const isVector = (flags & Flag.Vector) !== 0;
+    const isSigned = (flags & Flag.Signed) !== 0;
+    if (!isVector && !isSigned && text === undefined) signals.pushScalar(symbols.name(symbol));
     else {
-      const shape = { msb: symbols.msb(symbol), lsb: symbols.lsb(symbol), isVector };
+      const range = { msb: symbols.msb(symbol), lsb: symbols.lsb(symbol), isVector };
+      const shape = isSigned ? { ...range, isSigned } : range;
       signals.push(symbols.name(symbol), shape, text);
     }
     for (let at = offset; at < signals.bits; at++) nets[at] = this.#find(first + at - offset);

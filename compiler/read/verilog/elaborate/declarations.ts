@@ -215,10 +215,11 @@ function declareMemory(
     return;
   }
   body.buildAt(start);
+  const word = { msb, lsb, isSigned: (flags & Flag.Signed) !== 0 };
   const count = scope.memories.push({
     first: body.builder.declare(isHeld ? 0 : wordsOf(indices) * shape.width),
     indices,
-    ...(isHeld && { held: heldMemory(body, scope, shape, declared) }),
+    ...(isHeld && { held: heldMemory(body, scope, shape, word, declared) }),
   });
   const { Memory: kind } = SymbolKind;
   scope.symbols.add({ name, kind, value: count - 1, start, end, flags, netClass, msb, lsb });

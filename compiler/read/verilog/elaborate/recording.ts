@@ -4,7 +4,7 @@ import { Edge, Priority } from '../../../circuit/circuit.js';
 import { GateKind } from '../../../circuit/gates.js';
 import { GrowableUint8, GrowableUint32 } from '../../../circuit/growable.js';
 import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
-import type { MemoryIndex } from '../../../circuit/memory.js';
+import type { MemoryIndex, WordForm } from '../../../circuit/memory.js';
 import { pinNets, type WritePins } from '../../../circuit/memoryTable.js';
 import type { CellTable } from '../../../circuit/tables/cellTable.js';
 import { X } from '../../../circuit/values.js';
@@ -50,6 +50,7 @@ export interface RecordedMemory {
   /** Index of the block of the module that it is declared in. */
   readonly block: number;
   readonly width: number;
+  readonly word: WordForm;
   readonly indices: readonly MemoryIndex[];
   readonly contents: InitialContents;
   readonly origin: Origin;

@@ -7,6 +7,7 @@ interface Rarity {
   readonly msb: number;
   readonly lsb: number;
   readonly isVector: boolean;
+  readonly isSigned?: boolean;
   /** Of a word of a memory. */
   readonly name: string | undefined;
 }
@@ -43,12 +44,12 @@ export class SignalTable implements LazyList<Signal> {
   /** Adds any signal; `text` where its name is not the text of `name`. */
   push(
     name: NameId,
-    shape: { readonly msb: number; readonly lsb: number; readonly isVector: boolean },
+    shape: Pick<Signal, 'msb' | 'lsb' | 'isVector' | 'isSigned'>,
     text?: string,
   ): void {
-    const { msb, lsb, isVector } = shape;
+    const { msb, lsb } = shape;
     this.#rarities ??= new Map();
-    this.#rarities.set(this.length, { msb, lsb, isVector, name: text });
+    this.#rarities.set(this.length, { ...shape, name: text });
     this.#columns.push(name);
     this.#columns.push(this.#bits);
     this.#bits += Math.abs(msb - lsb) + 1;
@@ -56,12 +57,13 @@ export class SignalTable implements LazyList<Signal> {
 
   at(index: number): Signal | undefined {
     if (index < 0 || index >= this.length) return undefined;
-    const { msb, lsb, isVector, name } = this.#rarities?.get(index) ?? scalar;
+    const { msb, lsb, isVector, isSigned, name } = this.#rarities?.get(index) ?? scalar;
     return {
       name: name ?? this.#names.text(this.#columns.get(2 * index)),
       msb,
       lsb,
       isVector,
+      ...(isSigned && { isSigned }),
       offset: this.#columns.get(2 * index + 1),
       width: Math.abs(msb - lsb) + 1,
     };

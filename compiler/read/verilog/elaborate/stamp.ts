@@ -212,10 +212,10 @@ export class Stamper {
     const builder = this.#builder;
     const moved = (list: readonly NetId[]): NetId[] => list.map((net) => netId(nets[net]!));
     for (const memory of recording.memories) {
-      const { name, block, width, indices, contents, origin } = memory;
+      const { name, block, width, word, indices, contents, origin } = memory;
       const path = builder.hierarchy.path(scopes[block]!);
       const number = builder.memory({
-        ...{ name: path === '' ? name : `${path}.${name}`, width, indices },
+        ...{ name: path === '' ? name : `${path}.${name}`, width, word, indices },
         ...{ initial: contents.bytes, sourceIndex: origin.source, offset: origin.offset },
       });
       for (const { address, firstDriver } of memory.reads) {

@@ -1,0 +1,104 @@
+import type { Command } from 'commander';
+import type { Design } from '../../compile.js';
+import { addConditions } from '../../condition/conditions.js';
+import type { OutletPlan } from '../../run/outlets/outlet.js';
+import { MOST_CONDITIONS, stopWhen } from '../../run/outlets/stopWhen.js';
+import { positiveArgument } from '../numbers.js';
+import { UsageError } from '../usageError.js';
+
+/** What ends a run before its last cycle. */
+export interface StopOptions {
+  readonly stopWhen?: readonly string[];
+  readonly stopAfter?: number;
+}
+
+/** Adds the options for conditions that end a run. */
+export function addStopOptions(command: Command): Command {
+  return command
+    .option(
+      '--stop-when <expression>',
+      'end the run in the cycle in which this holds when the outputs are sampled: a Verilog\n' +
+        'expression over nets by their hierarchical names, such as "cpu.pc == 16\'h40 && !cpu.halt";\n' +
+        'repeatable',
+      (text: string, before: readonly string[] = []) => [...before, text],
+    )
+    .option(
+      '--stop-after <n>',
+      'with --stop-when: not before its N-th occurrence; cycles in a row in which it holds are one',
+      positiveArgument,
+    );
+}
+
+/** A design that can be stopped, and what stops it. */
+export interface Stops {
+  /** The one given, with gates for the conditions. */
+  readonly design: Design;
+  readonly outlets: readonly OutletPlan[];
+  /** Tells a circuit with these gates from one without. */
+  readonly key: string;
+}
+
+/**
+ * What ends a run before its last cycle, if anything; `record` is the folder of its record. Throws
+ * InputError for what is wrong with an expression, and UsageError.
+ */
+export function stopsOf(design: Design, options: StopOptions, record?: string): Stops {
+  const { stopWhen: texts = [], stopAfter: after = 1 } = options;
+  if (texts.length === 0) {
+    if (options.stopAfter === undefined) return { design, outlets: [], key: '' };
+    throw new UsageError('error: --stop-after is for --stop-when EXPRESSION, which is missing');
+  }
+  if (texts.length > MOST_CONDITIONS) {
+    throw new UsageError(`error: --stop-when: at most ${MOST_CONDITIONS} expressions`);
+  }
+  const { threeValued } = design.layout;
+  const { circuit, nets } = addConditions(design.circuit, texts, {
+    ...{ threeValued, name: '--stop-when' },
+  });
+  const conditions = texts.map((text, i) => ({ text: text.trim(), net: nets[i]! }));
+  const lookAround = (cycle: number): string => lookingAround(cycle, record);
+  return {
+    design: { ...design, circuit },
+    outlets: [stopWhen(conditions, { after, lookAround })],
+    key: JSON.stringify(texts),
+  };
+}
+
+/** Cycles that are shown before and after the one in which a run stopped. */
+const AROUND = 20;
+
+// Without a record the run has to go again, without what has ended it and what it has written.
+function lookingAround(cycle: number, record: string | undefined): string {
+  const from = Math.max(0, cycle - AROUND);
+  if (record !== undefined) {
+    const window = ['--from', `${from}`, '--to', `${cycle}`, '--picture', 'stop.svg'];
+    return shellText(['clockstride', 'revisit', record, ...window]);
+  }
+  const to = cycle + AROUND;
+  const window = ['--from', `${from}`, '--to', `${to}`, '--picture', 'stop.svg'];
+  const again = repeatedWords(process.argv.slice(2));
+  return shellText(['clockstride', ...again, '--cycles', `${to + 1}`, ...window]);
+}
+
+// Options of a run that are not repeated: those with a value, and others.
+const VALUED: ReadonlySet<string> = new Set([
+  ...['--stop-when', '--stop-after', '--cycles', '--response', '--response-form'],
+  ...['--ports', '--every', '--from', '--to', '--waveform', '--table', '--picture'],
+]);
+const PLAIN: ReadonlySet<string> = new Set(['--changes', '--json', '--signature']);
+
+function repeatedWords(words: readonly string[]): string[] {
+  const kept: string[] = [];
+  for (let i = 0; i < words.length; i++) {
+    const [name] = words[i]!.split('=', 1) as [string];
+    if (!VALUED.has(name) && !PLAIN.has(name)) kept.push(words[i]!);
+    // Its value, where that is a word of its own.
+    else if (VALUED.has(name) && name === words[i]) i++;
+  }
+  return kept;
+}
+
+const shellText = (words: readonly string[]): string =>
+  words.map((word) => (/^[\w@%+=:,./-]+$/.test(word) ? word : quoted(word))).join(' ');
+
+const quoted = (word: string): string => `'${word.replaceAll("'", "'\\''")}'`;
