@@ -34,9 +34,17 @@ export function checkCondition(
   });
 }
 
-function unknownName({ path, indices }: NameExpression, scope: CircuitScope): string | undefined {
-  if (indices !== undefined || scope.resolve(path) !== undefined) return undefined;
-  const text = path.map((id) => scope.shared.names.text(id)).join('.');
+function unknownName({ path, indices = [] }: NameExpression, scope: CircuitScope) {
+  const { names } = scope.shared;
+  const elements: string[] = [];
+  for (const [i, id] of path.entries()) {
+    const index = indices[i];
+    // What is worked out has its message where that is done.
+    if (index !== undefined && index.kind !== 'number') return undefined;
+    elements.push(index === undefined ? names.text(id) : `${names.text(id)}[${index.value}]`);
+  }
+  if (scope.resolve(elements.map((text) => names.internText(text))) !== undefined) return undefined;
+  const text = elements.join('.');
   return `there is no net or memory \`${text}\`${hintOf(text, scope.visibleNames())}`;
 }
 
