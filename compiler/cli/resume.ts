@@ -31,12 +31,14 @@ response. The netlists and tables must be as they were. A response file is cut t
 the checkpoint was made and gone on with; where what was written of it is gone, the run
 goes back as far as it must.
 
-Exit status: as for run; 2 also where the record or an input is not as it was.
+Exit status: 0 done and as expected, 1 done and a departure found, stopped by a condition
+or interrupted again, 2 the record or an input is not as it was, or a cycle has no result.
 
-Example:
+Examples:
   clockstride run lock.v --random 1 --cycles 100_000_000_000 --signature --record lock.record
   ^C
-  clockstride resume lock.record`;
+  clockstride resume lock.record
+  clockstride resume lock.record --json`;
 
 async function resume(dir: string, { json }: { readonly json?: true }): Promise<void> {
   const { record, files, options } = await recordedRun(dir);

@@ -72,10 +72,10 @@ export function summaryText(summary: RunSummary, expectation: string | undefined
   if (summary.unknownRegisters !== undefined) lines.push(unknownText(summary.unknownRegisters));
   lines.push(...busLines(summary.buses ?? []));
   lines.push(...activityLines(summary.activity));
-  for (const note of summary.notes) lines.push(`note: ${note}`);
   if (summary.stopped !== undefined && isTold(summary)) {
     lines.push(`stopped at cycle ${count(summary.stopped.cycle)}: ${summary.stopped.reason}`);
   }
+  for (const note of summary.notes) lines.push(`note: ${note}`);
   if (expectation !== undefined) lines.push(verdict(summary, expectation));
   return lines.join('\n');
 }
