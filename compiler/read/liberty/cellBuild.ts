@@ -1,10 +1,12 @@
 import { GateKind } from '../../circuit/gates.js';
-import type { NetId } from '../../circuit/ids.js';
+import { type NetId, NO_NET } from '../../circuit/ids.js';
 import type { DiagnosticCode } from '../../diagnostics/codes.js';
 import type { Position } from '../../diagnostics/sourceMap.js';
 import type { Recording } from '../verilog/elaborate/recording.js';
+import { buildTruthTable } from '../verilog/elaborate/truthTable.js';
 import type { LibertyCell } from './cell.js';
 import { CellNets, type Context, scalarContext } from './cellNets.js';
+import { exactFunction } from './exactFunction.js';
 import { type Expression, type Operation, parseExpression } from './expression.js';
 import type { LibertyText } from './syntax.js';
 
@@ -42,7 +44,7 @@ export class CellBuild {
     const known = context === scalarContext ? this.#built.get(text) : undefined;
     if (known !== undefined) return known;
     const expression = this.#parse(text);
-    const net = expression && this.#build(expression, text, context);
+    const net = expression && this.#buildExact(expression, text, context);
     if (net !== undefined && context === scalarContext) this.#built.set(text, net);
     return net;
   }
@@ -55,7 +57,7 @@ export class CellBuild {
     const expression = this.#parse(text);
     if (expression === undefined) return undefined;
     const isInverted = expression.kind === 'not';
-    const net = this.#build(isInverted ? expression.operand : expression, text, context);
+    const net = this.#buildExact(isInverted ? expression.operand : expression, text, context);
     return net === undefined ? undefined : { net, isInverted };
   }
 
@@ -70,6 +72,19 @@ export class CellBuild {
     const { message, start, end } = expression;
     this.report('syntax-error', `this is no function: ${message}`, placeIn(text, start, end));
     return undefined;
+  }
+
+  #buildExact(expression: Expression, text: LibertyText, context: Context): NetId | undefined {
+    const netOf = (name: string): NetId => {
+      const net = this.nets.resolve(name, context);
+      // A name without a net is reported where the text is built.
+      return typeof net === 'number' ? net : NO_NET;
+    };
+    const exact = exactFunction(expression, netOf);
+    if (exact === undefined || exact.inputs.includes(NO_NET)) {
+      return this.#build(expression, text, context);
+    }
+    return buildTruthTable(exact.table, exact.inputs, this.recording);
   }
 
   #build(expression: Expression, text: LibertyText, context: Context): NetId | undefined {

@@ -1,6 +1,11 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { gatesOf, signalValue } from '../verilog/elaborate/reading.js';
+import {
+  evaluate as evaluateNet,
+  gatesOf,
+  netsOf,
+  signalValue,
+} from '../verilog/elaborate/reading.js';
 import { cellCircuit, cellDesign, readFiles } from './reading.js';
 
 const names = ['A', 'B', 'C', 'D'];
@@ -83,6 +88,47 @@ describe('the function of an output', () => {
       }),
       { seed: 20260102, numRuns: 300 },
     );
+  });
+
+  // A cell's table counts, not its text: x where, and only where, the value depends on what is x.
+  it('is x only where it depends on an x', () => {
+    fc.assert(
+      fc.property(tree, (node) => {
+        const circuit = cellCircuit(cellWith(write(node)));
+        const nets = names.map((name) => netsOf(circuit, name)[0]!);
+        const [y] = netsOf(circuit, 'Y');
+        for (let code = 0; code < 3 ** names.length; code++) {
+          const values = names.map((_, pin) => Math.floor(code / 3 ** pin) % 3);
+          const meant = [...Array(16).keys()].filter((levels) =>
+            values.every((value, pin) => value === 2 || value === ((levels >> pin) & 1)),
+          );
+          const results = new Set(meant.map((levels) => evaluate(node, levels)));
+          const expected = results.size > 1 ? 2 : [...results][0];
+          const given = new Map(nets.map((net, pin) => [net, values[pin]!]));
+          expect(evaluateNet(circuit, y!, given)).toBe(expected);
+        }
+      }),
+      { seed: 20260103, numRuns: 150 },
+    );
+  });
+
+  it('of a multiplexer agrees with a primitive of the same cell', () => {
+    const primitive = `primitive choice (Y, A, B, S); output Y; input A, B, S; table
+      0 ? 0 : 0; 1 ? 0 : 1; ? 0 1 : 0; ? 1 1 : 1; 0 0 x : 0; 1 1 x : 1; endtable endprimitive`;
+    const { circuit, problems } = readFiles([
+      [
+        't.v',
+        `${primitive} module top(input a, b, s, output y, z);
+           choice u(y, a, b, s); MUX m(.A(a), .B(b), .S(s), .Y(z)); endmodule`,
+      ],
+      [
+        't.lib',
+        `library (t) { cell (MUX) { pin (A, B, S) { direction : input; }
+           pin (Y) { direction : output; function : "(A * !S) + (B * S)"; } } }`,
+      ],
+    ]);
+    expect(problems).toEqual([]);
+    expect(gatesOf(circuit!)).toEqual(['mux', 'mux']);
   });
 
   it.each([

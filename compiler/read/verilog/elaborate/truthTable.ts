@@ -87,21 +87,33 @@ class Expansion {
   }
 }
 
-/** An input whose values leave the least: a constant on one side, or the same, or an inverse. */
+/**
+ * An input whose values leave the least: the same, an inverse, a constant on one side; and then what
+ * depends on the fewest other inputs.
+ */
 function splitInput(table: TruthTable, inputs: number): number {
   let best = 0;
   let bestCost = Number.MAX_VALUE;
   for (let input = 0; input < inputs; input++) {
-    const zero = cofactor(table, input, 0);
-    const one = cofactor(table, input, 1);
-    const simple = [zero, one].filter((each) => isConstant(each, '0') || isConstant(each, '1'));
-    const cost = zero === one ? 0 : zero === inverse(one) ? 1 : 4 - simple.length;
+    const cost = splitCost(cofactor(table, input, 0), cofactor(table, input, 1), inputs);
     if (cost < bestCost) {
       best = input;
       bestCost = cost;
     }
   }
   return best;
+}
+
+function splitCost(zero: TruthTable, one: TruthTable, inputs: number): number {
+  if (zero === one) return 0;
+  if (zero === inverse(one)) return 1;
+  const sides = [zero, one];
+  const constants = sides.filter((side) => isConstant(side, '0') || isConstant(side, '1')).length;
+  let left = 0;
+  for (const side of sides) {
+    for (let input = 0; input < inputs - 1; input++) if (dependsOn(side, input)) left++;
+  }
+  return (4 - constants) * 2 * inputs + left;
 }
 
 const isConstant = (table: TruthTable, value: string): boolean =>
