@@ -4,7 +4,7 @@ import type { Model } from '../model/model.js';
 import type { SavedState } from '../model/savedState.js';
 import { readValue, type Value, writeValue } from '../model/values.js';
 import { Recording, type RowShape } from './recording.js';
-import { type Signal, signalsOf } from './signals.js';
+import { type Signal, shownAtFirst, signalsOf } from './signals.js';
 import { rowAt, type Stimulus } from './stimulus.js';
 import { Traces } from './traces.js';
 
@@ -59,7 +59,7 @@ export class Session {
     this.#inputs = new Uint32Array(inputWords);
     this.#rows = new Uint32Array(CHUNK * inputWords);
     this.#response = new Uint32Array(CHUNK * outputWords);
-    this.shown = this.signals.slice(0, 14).map(({ name }) => name);
+    this.shown = shownAtFirst(this.signals);
     this.#restart();
   }
 

@@ -28,3 +28,14 @@ export function signalsOf(model: Model): Signal[] {
     ...model.nets.map(net),
   ];
 }
+
+const MOST_AT_FIRST = 14;
+const LEAST_AT_FIRST = 6;
+
+/** Names of what the diagram shows at first: ports and what stands beside them, else what there is. */
+export function shownAtFirst(signals: readonly Signal[]): string[] {
+  const isDeep = ({ kind, name }: Signal): boolean => kind === 'net' && name.includes('.');
+  const near = signals.filter((signal) => !isDeep(signal)).slice(0, MOST_AT_FIRST);
+  const rest = signals.filter(isDeep).slice(0, Math.max(0, LEAST_AT_FIRST - near.length));
+  return [...near, ...rest].map(({ name }) => name);
+}

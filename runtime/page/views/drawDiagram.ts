@@ -184,8 +184,9 @@ function label(
 ): void {
   const room = right - left - 2 * ROUND - 2;
   if (room < 8) return;
+  // Of a long number the end is seen: it is what changes, and the whole stands beside the name.
   const most = Math.floor(room / 7);
-  const shown = text.length <= most ? text : most >= 3 ? `${text.slice(0, most - 1)}…` : '';
+  const shown = text.length <= most ? text : most >= 3 ? `…${text.slice(1 - most)}` : '';
   if (shown === '') return;
   context.fillStyle = colours.ink;
   context.fillText(shown, (left + right) / 2, top + (HIGH + LOW) / 2 + 0.5);

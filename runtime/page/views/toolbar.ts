@@ -12,13 +12,15 @@ const RATES: readonly (readonly [string, number])[] = [
   ['as fast as it goes', Number.POSITIVE_INFINITY],
 ];
 
+const MOST_LEAP = 1_000_000_000;
+
 /** Stepping, running, the rate, and where one is. */
 export function toolbar(desk: Desk): View {
   const run = button('Run', () => desk.run(!desk.isRunning), { class: 'main' });
   const count = element('input', {
     type: 'number',
     min: 1,
-    max: 1_000_000,
+    max: MOST_LEAP,
     value: 100,
     'aria-label': 'cycles in a leap',
   });
@@ -26,8 +28,12 @@ export function toolbar(desk: Desk): View {
   const rate = element('span', { class: 'quiet' });
   const leap = (): void => {
     const cycles = Number(count.value);
-    if (Number.isInteger(cycles) && cycles > 0 && cycles <= 1_000_000) desk.leap(cycles);
-    else desk.say('Give a whole number of cycles, from 1 to 1,000,000.', true);
+    if (Number.isInteger(cycles) && cycles > 0 && cycles <= MOST_LEAP) desk.leap(cycles);
+    else
+      desk.say(
+        `Give a whole number of cycles, from 1 to ${MOST_LEAP.toLocaleString('en-US')}.`,
+        true,
+      );
   };
   const root = element(
     'section',
