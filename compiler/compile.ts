@@ -25,6 +25,7 @@ import { startBits } from './passes/mergeRegisters/startBits.js';
 import { orderNodes } from './passes/orderNodes.js';
 import { orderSinks } from './passes/orderSinks.js';
 import { type PackedLogic, packWords } from './passes/packWords/packWords.js';
+import { sweepNodes } from './passes/sweepNodes/sweepNodes.js';
 import { transitions } from './passes/transition/transition.js';
 import type { CyclePrograms, Program } from './program/program.js';
 import type { PassSwitches } from './program/switches.js';
@@ -101,7 +102,7 @@ function plainPrograms(
   // Cycles of several kinds work on the same state bits: none of them may move or turn any.
   const areSeveral = cycles.length > 1 || observes;
   const programs = cycles.map((cycle) => {
-    const whole = compacted(cycle, passes, areSeveral);
+    const whole = swept(compacted(cycle, passes, areSeveral), passes, areSeveral);
     return plainProgram(areSeveral ? whole : grouped(whole, passes), passes, areSeveral);
   });
   return { programs, ...rest };
@@ -144,7 +145,8 @@ export function packedPrograms(
   const [cycle, another] = cycles;
   if (another !== undefined) return plainPrograms(design, passes);
   const whole = compacted(cycle!, passes);
-  const { logic, derived } = merged(whole, passes, start);
+  const { logic: kept, derived } = merged(whole, passes, start);
+  const logic = swept(kept, passes);
   const packed = passes.packWords === false ? undefined : packWords(logic);
   const program = packed
     ? packedProgram(packed, passes)
@@ -154,6 +156,13 @@ export function packedPrograms(
 
 const compacted = (logic: Logic, passes: PassSwitches, keepsStates = false): Logic =>
   passes.compact === false ? logic : compact(logic, keepsStates);
+
+function swept(logic: Logic, passes: PassSwitches, keepsStates = false): Logic {
+  const { share, recover, sweepNodes: sweeps } = passes;
+  if (share === false || sweeps === false) return logic;
+  const smaller = sweepNodes(logic, { recover });
+  return smaller === logic ? logic : compacted(smaller, passes, keepsStates);
+}
 
 const grouped = (logic: Logic, passes: PassSwitches): Logic =>
   passes.groupRegisters === false ? logic : compacted(groupRegisters(logic), passes);

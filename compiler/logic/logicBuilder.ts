@@ -98,11 +98,12 @@ export class LogicBuilder {
 
   /** The number that bits make, the first one lowest; see `LogicOp.Pack`. */
   pack(bits: readonly Literal[]): Literal {
-    return bits.reduceRight(
-      (number, bit) =>
-        number === FALSE && bit === FALSE ? FALSE : this.#node(LogicOp.Pack, bit, number, 0),
-      FALSE,
-    );
+    return bits.reduceRight((number, bit) => this.longer(bit, number), FALSE);
+  }
+
+  /** A number with one more bit, which becomes the lowest one; see `LogicOp.Pack`. */
+  longer(bit: Literal, number: Literal): Literal {
+    return number === FALSE && bit === FALSE ? FALSE : this.#node(LogicOp.Pack, bit, number, 0);
   }
 
   /** A word of a memory, for `bit`; see `LogicOp.Load`. */

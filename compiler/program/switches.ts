@@ -3,7 +3,7 @@
  * responses, states and names stay the same.
  */
 export interface PassSwitches {
-  /** Equal nodes are made once (structural hashing); `mergeRegisters` is left out with it. */
+  /** Equal nodes are made once (structural hashing); `mergeRegisters` and `sweepNodes` are left out with it. */
   readonly share?: boolean;
   /** Exclusive-ors and multiplexers are recognised in and/or form. */
   readonly recover?: boolean;
@@ -11,6 +11,8 @@ export interface PassSwitches {
   readonly compact?: boolean;
   /** Registers that never differ from the given start on are merged. */
   readonly mergeRegisters?: boolean;
+  /** Operations that are always equal are made once, though they are built differently. */
+  readonly sweepNodes?: boolean;
   /** Operations that are made many times over are packed, sixteen in a vector. */
   readonly packWords?: boolean;
   /** Where nothing is packed: registers of one enable or reset are updated sixteen at a time. */
@@ -33,6 +35,7 @@ export const passNames = [
   'recover',
   'compact',
   'mergeRegisters',
+  'sweepNodes',
   'packWords',
   'groupRegisters',
   'choosePolarity',

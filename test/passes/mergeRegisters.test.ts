@@ -96,6 +96,21 @@ describe('mergeRegisters', () => {
     expect(derived.filter((bit) => bit.of !== undefined).every((bit) => bit.inverted)).toBe(true);
   });
 
+  it('merges registers whose next values are equal and built differently', () => {
+    const circuit = circuitOf(`
+      module carries(input clk, input a, input b, output x, output y);
+        reg p, q;
+        always @(posedge clk) begin
+          p <= (a & b) | (p & (a | b));
+          q <= (a & b) | (q & (a ^ b));
+        end
+        assign x = p, y = q;
+      endmodule`);
+    const logic = compact(logicOf(circuit));
+    const { derived } = mergeRegisters(logic, startBits(logic.states, Uint8Array.of(0, 0)));
+    expect(derived).toMatchObject([{ inverted: false, of: logic.states[0] }]);
+  });
+
   it('keeps registers apart that start differently', () => {
     const circuit = circuitOf(`
       module twins(input clk, input d, output p, output q);

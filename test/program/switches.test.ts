@@ -67,13 +67,14 @@ describe('each switch', () => {
         reg [7:0] a, b;
         reg [63:0] held, mixed;
         wire p = (s & d[0]) | (~s & d[1]), q = (s & d[0]) | (~s & d[1]);
+        wire m = (d[2] & d[3]) | (d[4] & (d[2] | d[3])), n = (d[2] & d[3]) | (d[4] & (d[2] ^ d[3]));
         always @(posedge clk) begin
           a <= a + 1;
           b <= b + 1;
           if (en) held <= d;
           mixed <= (held ^ {mixed[62:0], p}) & ~d;
         end
-        assign y = held, z = ^(a & b) ^ q ^ mixed[63], w = {mixed[1], &d[9:0] | &mixed[9:0]};
+        assign y = held, z = ^(a & b) ^ q ^ mixed[63] ^ m ^ n, w = {mixed[1], &d[9:0] | &mixed[9:0]};
       endmodule`,
     ),
   );

@@ -1,10 +1,14 @@
 import type { DerivedState } from '../../../runtime/stateBits.js';
 import { FALSE, type Literal, type Logic, LogicOp } from '../../logic/logic.js';
 import { LogicBuilder, type LogicOptions } from '../../logic/logicBuilder.js';
+import { builtNode } from '../../logic/rebuild.js';
+import { WindowProof } from '../../logic/windowProof.js';
 import { signaturesOf } from './signatures.js';
 
 /** Nodes walked in all rounds together; beyond that the graph is left as it is. */
 const BUDGET = 6_000_000;
+/** Values of 32 combinations that the proofs of a round may compute. */
+const PROOF_BUDGET = 2_000_000;
 
 /** A graph with fewer state bits, and what became of the others. */
 export interface Merged {
@@ -101,8 +105,25 @@ class Build {
       this.#place[number] = places++;
     }
     this.#literals = new Uint32Array(logic.nodeCount);
-    for (let node = 1; node < logic.nodeCount; node++) this.#literals[node] = this.#built(node);
-    this.next = logic.next.map((literal) => this.#moved(literal));
+    for (let node = 1; node < logic.nodeCount; node++) {
+      this.#literals[node] =
+        logic.op[node] === LogicOp.State
+          ? this.#state(logic.a[node]!)
+          : builtNode(this.#builder, logic, node, (literal) => this.#moved(literal));
+    }
+    this.next = this.#sameNext(logic.next.map((literal) => this.#moved(literal)));
+  }
+
+  // Next values that are built differently but are those of the first bit of the class.
+  #sameNext(next: readonly Literal[]): Literal[] {
+    const proof = new WindowProof(this.#builder, PROOF_BUDGET);
+    return next.map((literal, bit) => {
+      const number = this.#classes.of[bit]!;
+      const leader = this.#leader[number]!;
+      const turned = this.#start[bit]! ^ (number === 0 ? 0 : this.#start[leader]!);
+      const like = (number === 0 ? FALSE : next[leader]!) ^ turned;
+      return literal !== like && proof.areEqual(literal, like) ? like : literal;
+    });
   }
 
   merged(): Merged {
@@ -129,19 +150,6 @@ class Build {
       },
       derived,
     };
-  }
-
-  #built(node: number): Literal {
-    const { op, a, b, c } = this.#logic;
-    const builder = this.#builder;
-    const kind = op[node]!;
-    if (kind === LogicOp.Input) return builder.input(a[node]!);
-    if (kind === LogicOp.State) return this.#state(a[node]!);
-    const p = this.#moved(a[node]!);
-    const q = this.#moved(b[node]!);
-    if (kind === LogicOp.And) return builder.and(p, q);
-    if (kind === LogicOp.Xor) return builder.xor(p, q);
-    return builder.mux(p, q, this.#moved(c[node]!));
   }
 
   #state(bit: number): Literal {
