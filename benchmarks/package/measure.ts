@@ -14,11 +14,12 @@ import { readNetlist } from '../../compiler/read/readNetlist.js';
 import { inspect } from '../../compiler/report/inspection.js';
 import { startChromium, unpackChromium } from '../../test/browser/chromium.js';
 import { circuits } from '../circuits/index.js';
+import { type Frames, framesOf } from './frames.js';
 import { cyclesPerSecond } from './runs.mjs';
 
 /**
- * Measures model packages: sizes, the time to the first step in Chromium, and cycles a second there
- * and in Node. Writes `benchmarks/results/package.json` and `package.md`.
+ * Measures model packages: sizes, the time to the first step in Chromium, cycles a second there and
+ * in Node, and the frames of the one-file page. Writes `benchmarks/results/package.json` and `package.md`.
  *
  *   npm run build && npx tsx benchmarks/package/measure.ts
  */
@@ -37,6 +38,7 @@ interface Measured {
   /** Cycles a second in the fastest round. */
   readonly browser: number;
   readonly node: number;
+  readonly frames: Frames;
 }
 
 const results = fileURLToPath(new URL('../results/', import.meta.url));
@@ -68,8 +70,10 @@ async function measure(
   process.stderr.write(`${label.join(' ')}\n`);
   const design = designFor(name, parameters);
   const folder = (keep: string): string => join(root, `${label.join('-')}-${keep}`);
-  for (const keepNames of ['ports', 'all'] as const) {
-    await packDesign(design, { output: folder(keepNames), keepNames, version: '0', reading: {} });
+  const page = join(root, `${label.join('-')}.html`);
+  const request = { page, version: '0', reading: {} };
+  for (const keepNames of ['all', 'ports'] as const) {
+    await packDesign(design, { output: folder(keepNames), keepNames, ...request });
   }
   const bytes = (keep: string, file: string): Buffer => readFileSync(join(folder(keep), file));
   const module = bytes('ports', 'model.wasm');
@@ -95,6 +99,7 @@ async function measure(
     loadMs: median(loads),
     browser: Math.max(...rates.map((rate) => rate.browser)),
     node: Math.max(...rates.map((rate) => rate.node)),
+    frames: await framesOf(browser, page),
   };
 }
 
@@ -162,6 +167,19 @@ function row(measured: Measured): string {
   return `| ${cells.join(' | ')} |`;
 }
 
+function framesRow({ circuit, gates, frames }: Measured): string {
+  const cells = [
+    circuit,
+    gates,
+    frames.perSecond.toFixed(1),
+    frames.longestMs.toFixed(1),
+    frames.workMs.toFixed(1),
+    frames.mostWorkMs.toFixed(1),
+    Math.round(frames.cyclesPerSecond).toLocaleString('en-US'),
+  ];
+  return `| ${cells.join(' | ')} |`;
+}
+
 function report(measured: readonly Measured[], machine: Record<string, unknown>): string {
   const runtime = Math.max(...measured.map(({ runtimeGzipped }) => runtimeGzipped));
   return `# Model packages
@@ -178,6 +196,16 @@ response, in the fastest round of each place, which other work on the machine di
 | circuit | gates | wasm | gzipped | all names | gzipped | first step ms | cycles/s, Chromium | Node | ratio |
 |---|---|---|---|---|---|---|---|---|---|
 ${measured.map(row).join('\n')}
+
+## The one-file page
+
+Each model runs as fast as it goes in its page, without a graphics processor, for five seconds: frames
+a second, the longest time from one frame to the next, the part of a frame that the page takes (the
+median, and what 99 of 100 stay below), and cycles a second.
+
+| circuit | gates | frames/s | longest ms | page ms | 99 of 100 | cycles/s |
+|---|---|---|---|---|---|---|
+${measured.map(framesRow).join('\n')}
 `;
 }
 
