@@ -34,10 +34,11 @@ const text = (entry, outfile, plugins = []) =>
     logLevel: 'warning',
   });
 
-const files = ['dist/package/model.js', 'dist/package/worker.js'];
+const files = ['model.js', 'worker.js', 'lanes.js'].map((name) => `dist/package/${name}`);
 await Promise.all([
   text('runtime/model/index.ts', files[0]),
   text('runtime/model/worker/worker.ts', files[1], [shared]),
+  text('runtime/model/lanes/index.ts', files[2]),
   text('runtime/page/main.ts', 'dist/package/page.js'),
   text('runtime/page/page.css', 'dist/package/page.css'),
 ]);

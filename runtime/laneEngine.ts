@@ -1,6 +1,6 @@
 import type { Fault } from './engine.js';
 import { laneStrides } from './laneLayout.js';
-import type { LaneModel } from './laneModel.js';
+import type { BareLaneModel, LaneModel } from './laneModel.js';
 import { type LaneExports, type LanePlace, placesOf } from './lanePlaces.js';
 import { type ModelLayout, rowStride } from './layout.js';
 import { loadStates, showStates } from './stateBits.js';
@@ -26,7 +26,7 @@ export class LaneEngine {
   /** Lanes that have ended, in the order in which they did. */
   readonly faults: readonly LaneFault[];
   readonly #faults: LaneFault[] = [];
-  readonly #model: LaneModel;
+  readonly #model: BareLaneModel;
   readonly #place: LanePlace;
   #cycles = 0;
   /** Whether the state is in the second area. */
@@ -34,7 +34,7 @@ export class LaneEngine {
   /** Per 32 lanes, a 1 for each that goes on. */
   readonly #running: Uint32Array;
 
-  private constructor(model: LaneModel, place: LanePlace) {
+  private constructor(model: BareLaneModel, place: LanePlace) {
     this.layout = model.layout;
     this.lanes = model.lanes;
     this.faults = this.#faults;
@@ -45,6 +45,8 @@ export class LaneEngine {
   }
 
   /** Makes an engine of a model, in power-up state 0. Compiles its module if none is given. */
+  static async create(model: LaneModel): Promise<LaneEngine>;
+  static async create(model: BareLaneModel, module: WebAssembly.Module): Promise<LaneEngine>;
   static async create(model: LaneModel, module?: WebAssembly.Module): Promise<LaneEngine> {
     const [engine] = await LaneEngine.createMany(model, 1, module);
     return engine!;
@@ -68,9 +70,13 @@ export class LaneEngine {
     return places.map((place) => new LaneEngine(model, place));
   }
 
-  /** Cycles run since the reset. */
+  /** Cycles run since the reset; set to a number, they count on from there. */
   get cycles(): number {
     return this.#cycles;
+  }
+
+  set cycles(cycles: number) {
+    this.#cycles = cycles;
   }
 
   /**
@@ -174,11 +180,44 @@ export class LaneEngine {
     for (let done = 0; done < cycles; ) done += this.#call(done, cycles - done, false, false);
   }
 
+  /**
+   * What the next cycle would give with a lane row of inputs, and the lanes in which it has no
+   * result. Nothing changes.
+   */
+  preview(stimulus: Uint32Array, response: Uint32Array): LaneFault[] {
+    const [cycles, isSwapped, ended] = [this.#cycles, this.#isSwapped, this.#faults.length];
+    const running = this.#running.slice();
+    this.run(1, stimulus, 0, response);
+    // A cycle writes to the other area only, so the one that it read is as it was.
+    this.#cycles = cycles;
+    this.#isSwapped = isSwapped;
+    this.#running.set(running);
+    return this.#faults.splice(ended);
+  }
+
+  /**
+   * Sets one lane to a state and leaves the others as they are; one that has ended goes on again.
+   * `before` is the packed row of its inputs in the cycle before, if there was one. Throws
+   * RangeError for no lane, and what `Engine.reset` throws.
+   */
+  restore(lane: number, state: Uint8Array, before?: Uint32Array): void {
+    this.#checkLane(lane);
+    const bits = loadStates(this.layout, this.#model, state, before);
+    const words = this.stateWords();
+    const parts = this.#running.length;
+    const part = lane >>> 5;
+    const one = 1 << (lane & 31);
+    for (let bit = 0, at = part; bit < bits.length; bit++, at += parts) {
+      words[at] = bits[bit] === 1 ? words[at]! | one : words[at]! & ~one;
+    }
+    this.#running[part]! |= one;
+    const fault = this.#faults.findIndex((found) => found.lane === lane);
+    if (fault >= 0) this.#faults.splice(fault, 1);
+  }
+
   /** The state elements of a lane, as `Engine.state` gives them. Throws RangeError for no lane. */
   state(lane: number): Uint8Array {
-    if (!(Number.isInteger(lane) && lane >= 0 && lane < this.lanes)) {
-      throw new RangeError(`lanes are 0 to ${this.lanes - 1}, got ${lane}`);
-    }
+    this.#checkLane(lane);
     const words = this.stateWords();
     const parts = this.#running.length;
     const part = lane >>> 5;
@@ -202,6 +241,11 @@ export class LaneEngine {
   /** Per 32 lanes, a 1 for each that has not ended; a view of what changes as lanes do. */
   get running(): Readonly<Uint32Array> {
     return this.#running;
+  }
+
+  #checkLane(lane: number): void {
+    if (Number.isInteger(lane) && lane >= 0 && lane < this.lanes) return;
+    throw new RangeError(`lanes are 0 to ${this.lanes - 1}, got ${lane}`);
   }
 
   // Calls the module as often as needed; `load` brings the stimulus of a call into place.

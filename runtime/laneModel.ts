@@ -3,6 +3,9 @@ import type { LaneCount } from './laneLayout.js';
 import type { ModelLayout } from './layout.js';
 import type { StateMap } from './stateBits.js';
 
+/** A lane model without its bytes, which have become a module. */
+export type BareLaneModel = Omit<LaneModel, 'bytes'>;
+
 /** A model compiled for lanes: the bytes of a WebAssembly module and what is needed to run it. */
 export interface LaneModel extends StateMap {
   /**

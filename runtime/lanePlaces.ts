@@ -1,5 +1,5 @@
 import { laneStrides } from './laneLayout.js';
-import type { LaneModel } from './laneModel.js';
+import type { BareLaneModel } from './laneModel.js';
 import { rowStride } from './layout.js';
 
 /** Bytes that rows of one call of the module may take, so that they stay cached. */
@@ -44,7 +44,7 @@ export interface LaneBuffers {
 const roundUp = (value: number): number => Math.ceil(value / 64) * 64;
 
 /** Lays out the rows and the states of so many engines in the memory of one instance, which grows. */
-export function placesOf(model: LaneModel, exports: LaneExports, count: number): LanePlace[] {
+export function placesOf(model: BareLaneModel, exports: LaneExports, count: number): LanePlace[] {
   const { layout, lanes, memory, states } = model;
   const strides = laneStrides(layout, lanes);
   const [input, output] = [strides.input * 4, strides.output * 4];

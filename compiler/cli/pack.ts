@@ -1,5 +1,7 @@
-import { Command, InvalidArgumentError } from 'commander';
+import { Command, InvalidArgumentError, Option } from 'commander';
+import { type LaneCount, laneCounts } from '../../runtime/laneLayout.js';
 import type { ClockTiming } from '../circuit/clockSchedule.js';
+import type { Design } from '../compile.js';
 import { startEmitter } from '../emit/emitter.js';
 import { PackageDeparture } from '../pack/check.js';
 import type { ReadingOptions } from '../pack/fingerprint.js';
@@ -7,6 +9,7 @@ import type { KeepNames } from '../pack/keptNets.js';
 import { type NpmName, npmNameOf } from '../pack/packageJson.js';
 import { type PackSummary, packDesign } from '../pack/packDesign.js';
 import { FolderRefused } from '../pack/writePackage.js';
+import { REGISTER_LIMIT } from '../read/verilog/behaviour/memorySelect.js';
 import { Progress } from '../run/progress.js';
 import { count } from '../run/runSummary.js';
 import { addClockOption, type ClockOptions, timedDesign } from './clockOption.js';
@@ -19,6 +22,7 @@ interface PackOptions extends NetlistOptions, ClockOptions {
   readonly output?: string;
   readonly page?: string;
   readonly keepNames?: KeepNames;
+  readonly lanes: string;
   readonly unknown?: true;
   readonly name?: NpmName;
   readonly json?: true;
@@ -36,6 +40,11 @@ export function packCommand(): Command {
         'those whose name fits, with * and ? (repeatable); they cost space, no time',
       addKept,
     )
+    .addOption(
+      new Option('--lanes <count>', 'independent sequences that run side by side in the module')
+        .choices(['1', ...laneCounts.map(String)])
+        .default('1'),
+    )
     .option('--unknown', 'three values: registers without a start are x at power-up')
     .option('--name <name[@version]>', 'add a package.json, to install or publish under', npmName)
     .option('--json', 'print the summary as JSON')
@@ -49,6 +58,9 @@ and a README for this netlist; the page has the model inside and needs nothing e
 Before either appears, the package runs at least 10,000 random
 cycles or 5 seconds beside the reference interpreter, and must agree in every bit.
 
+With --lanes the module runs many sequences of the circuit at once, each with inputs and a state
+of its own; the page and circuits with memories have one.
+
 Exit status: 0 written, 1 the package departs from the reference and was not written,
 2 the netlist or the request is wrong.
 
@@ -60,6 +72,10 @@ async function pack(files: string[], options: PackOptions): Promise<void> {
   if (output === undefined && page === undefined) {
     throw new UsageError('error: say what to write, with --output DIR or --page FILE');
   }
+  const lanes = Number(options.lanes) as 1 | LaneCount;
+  if (lanes !== 1 && page !== undefined) {
+    throw new UsageError('error: a page shows one sequence; give --lanes without --page');
+  }
   const emitter = startEmitter();
   // The folder that is being filled goes with the process.
   process.once('SIGINT', () => process.exit(1));
@@ -67,11 +83,13 @@ async function pack(files: string[], options: PackOptions): Promise<void> {
   try {
     const { circuit, found } = await loadCircuit(files, options);
     const design = timedDesign(circuit, options, { threeValued: options.unknown ?? false });
+    if (lanes !== 1) refuseMemories(design);
     printDiagnostics(found);
     const summary = await packDesign(design, {
       ...(output !== undefined && { output }),
       ...(page !== undefined && { page }),
       keepNames: options.keepNames ?? 'ports',
+      lanes,
       ...(options.name && { npmName: options.name }),
       version: version(),
       reading: readingOf(options),
@@ -91,6 +109,17 @@ async function pack(files: string[], options: PackOptions): Promise<void> {
     progress?.clear();
     await emitter.close();
   }
+}
+
+function refuseMemories({ layout: { memories } }: Design): void {
+  const [memory] = memories;
+  if (memory === undefined) return;
+  const isSmall = memories.every(({ width, depth }) => width * depth <= REGISTER_LIMIT);
+  const registers = `build it from registers with --memories-from ${REGISTER_LIMIT + 1}, or `;
+  throw new UsageError(
+    `error: lanes run no memories, and ${memory.name} is one; ` +
+      `${isSmall ? registers : ''}leave its module out by --black-box`,
+  );
 }
 
 function readingOf({
@@ -114,9 +143,9 @@ function readingOf({
 }
 
 function textOf({ model, output, page, files, check, keptNets }: PackSummary): string {
-  const sizes = ['model.wasm', 'model.mjs', 'worker.mjs'].map(
-    (name) => `  ${name.padEnd(12)} ${count(files[name]!)} bytes`,
-  );
+  const sizes = ['model.wasm', 'model.mjs', 'worker.mjs']
+    .filter((name) => name in files)
+    .map((name) => `  ${name.padEnd(12)} ${count(files[name]!)} bytes`);
   return [
     ...(output === undefined ? [] : [`${model} is packed in ${output}`, ...sizes]),
     ...(page === undefined ? [] : [`${model} as a page is ${page}`]),

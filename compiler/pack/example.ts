@@ -5,7 +5,11 @@ const SHOWN_OUTPUTS = 6;
 const SHOWN_INPUTS = 4;
 
 /** The text of `example.mjs`, a first use of the model that runs as it stands. */
-export function exampleText(layout: ModelLayout, resets: readonly ResetPort[]): string {
+export function exampleText(
+  layout: ModelLayout,
+  resets: readonly ResetPort[],
+  lanes: number,
+): string {
   const driven = layout.inputs.ports.filter(({ name }) => resets.every((r) => r.name !== name));
   const shown = layout.outputs.ports.slice(0, SHOWN_OUTPUTS);
   const lines = [
@@ -14,7 +18,14 @@ export function exampleText(layout: ModelLayout, resets: readonly ResetPort[]): 
     '',
     'const model = await load();',
     ...resetLines(resets),
-    ...writeLines(driven.slice(0, SHOWN_INPUTS)),
+    ...(lanes === 1 ? useLines(driven, shown) : laneLines(driven, shown)),
+  ];
+  return `${lines.join('\n')}\n`;
+}
+
+function useLines(driven: readonly PortLayout[], shown: readonly PortLayout[]): string[] {
+  return [
+    ...writeLines(driven.slice(0, SHOWN_INPUTS), 1),
     '// Outputs follow the inputs at once; registers wait for the clock.',
     "show('outputs in cycle');",
     'model.step(10);',
@@ -28,7 +39,22 @@ export function exampleText(layout: ModelLayout, resets: readonly ResetPort[]): 
     '  }',
     '}',
   ];
-  return `${lines.join('\n')}\n`;
+}
+
+function laneLines(driven: readonly PortLayout[], shown: readonly PortLayout[]): string[] {
+  const other = writeLines(driven.slice(0, 1), 0).map((line) => line.replace(');', ', 1);'));
+  return [
+    '// What is written without a lane goes to all of them.',
+    ...writeLines(driven.slice(0, SHOWN_INPUTS), 1),
+    ...(other.length > 0 ? ['// Lane 1 is to differ.', ...other] : []),
+    '// Outputs follow the inputs at once; registers wait for the clock, which all lanes share.',
+    'model.step(10);',
+    `for (const { name, width } of model.outputs.slice(0, ${shown.length})) {`,
+    '  const values = [0, 1].map((lane) => valueText(model.read(name, lane), width));',
+    "  console.log('cycle', model.cycle, name, '=', values.join(', '));",
+    '}',
+    ...blockLines(driven[0], shown[0]).map((line) => line.replace('.join(', '[1].join(')),
+  ];
 }
 
 function resetLines(resets: readonly ResetPort[]): string[] {
@@ -41,9 +67,11 @@ function resetLines(resets: readonly ResetPort[]): string[] {
   ];
 }
 
-function writeLines(ports: readonly PortLayout[]): string[] {
+function writeLines(ports: readonly PortLayout[], value: 0 | 1): string[] {
   if (ports.length === 0) return [];
-  const values = ports.map(({ name, width }) => `${key(name)}: ${width > 32 ? '5n' : '1'}`);
+  const values = ports.map(
+    ({ name, width }) => `${key(name)}: ${width > 32 ? `${value * 5}n` : value}`,
+  );
   return [`model.write({ ${values.join(', ')} });`];
 }
 

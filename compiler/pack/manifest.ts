@@ -1,3 +1,4 @@
+import type { LaneCount } from '../../runtime/laneLayout.js';
 import type { ModelLayout, PortLayout } from '../../runtime/layout.js';
 import type { PackageCheck } from './check.js';
 import { type ReadingOptions, type SourceRecord, sha256 } from './fingerprint.js';
@@ -15,7 +16,7 @@ export interface Manifest {
   readonly options: ReadingOptions & {
     readonly keepNames: KeepNames;
     readonly unknown: boolean;
-    readonly lanes: 1;
+    readonly lanes: 1 | LaneCount;
     readonly name?: string;
   };
   readonly inputs: readonly ManifestPort[];

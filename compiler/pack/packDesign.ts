@@ -3,6 +3,7 @@ import { mkdtempSync, rmSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { promisify } from 'node:util';
+import type { LaneCount } from '../../runtime/laneLayout.js';
 import type { PackageIdentity } from '../../runtime/model/identity.js';
 import type { Circuit } from '../circuit/circuit.js';
 import { isGate } from '../circuit/gates.js';
@@ -31,6 +32,8 @@ export interface PackRequest {
   /** File for the model as one HTML page. */
   readonly page?: string;
   readonly keepNames: KeepNames;
+  /** Independent sequences that run side by side; 1 unless given. */
+  readonly lanes?: 1 | LaneCount;
   readonly npmName?: NpmName;
   /** Of this tool. */
   readonly version: string;
@@ -61,9 +64,12 @@ export interface PackSummary {
  * asked for; what was there before is then as it was.
  */
 export async function packDesign(design: Design, request: PackRequest): Promise<PackSummary> {
-  const { output, page } = request;
+  const { output, page, lanes = 1 } = request;
   if (output === undefined && page === undefined) {
     throw new RangeError('expected an output or a page, got neither');
+  }
+  if (page !== undefined && lanes !== 1) {
+    throw new RangeError(`expected 1 lane for a page, got ${lanes}`);
   }
   const temporary = output === undefined ? mkdtempSync(join(tmpdir(), 'clockstride-')) : undefined;
   const folder = PackageFolder.begin(output ?? join(temporary!, 'package'));
@@ -85,25 +91,27 @@ async function fill(
   request: PackRequest,
 ): Promise<{ summary: PackSummary; pageOf: () => string }> {
   const { layout, circuit } = design;
-  const { keepNames, npmName, version, reading, emitter = localEmitter() } = request;
+  const { keepNames, lanes = 1, npmName, version, reading } = request;
+  const { emitter = localEmitter() } = request;
   const kept = keptNets(design, keepNames);
   const memories = keptMemories(design);
   const resets = resetPorts(circuit);
   const sources = sourceRecords(design);
   const netlist = netlistFingerprint(design, sources, reading);
-  const module = await packedModule(design, kept, netlist, emitter);
+  const { module, mayEnd } = await packedModule(design, kept, netlist, lanes, emitter);
   const identity: PackageIdentity = {
     name: layout.name,
     sha256: sha256(module),
     netlist,
     threeValued: layout.threeValued,
+    lanes,
   };
-  const example = exampleText(layout, resets);
+  const example = exampleText(layout, resets, lanes);
   const files = new Map<string, string | Uint8Array>([
     ['model.wasm', module],
     ['model.mjs', modelModule(identity, version)],
-    ['worker.mjs', workerModule(identity, version)],
-    ['model.d.ts', declarations(layout, kept.nets, memories)],
+    ...(lanes === 1 ? [['worker.mjs', workerModule(identity, version)] as const] : []),
+    ['model.d.ts', declarations(layout, kept.nets, memories, { lanes, mayEnd })],
     // TypeScript looks for the types of `model.mjs` under this name.
     ['model.d.mts', "export * from './model.js';\n"],
     ['example.mjs', example],
@@ -114,6 +122,7 @@ async function fill(
     design,
     kept,
     resets,
+    lanes,
     ...(onProgress && { onProgress }),
   });
   const printed = await outputOf(join(folder.path, 'example.mjs'));
@@ -122,7 +131,7 @@ async function fill(
     folder.write(name, content);
   };
   const { nets } = kept;
-  const facts = { layout, resets, nets, memories, keepNames, paces: reading.clock ?? [] };
+  const facts = { layout, lanes, resets, nets, memories, keepNames, paces: reading.clock ?? [] };
   add('README.md', readmeText({ ...facts, example, printed, npmName: npmName?.name }));
   if (npmName)
     add('package.json', packageJsonText(npmName, layout.name, [...files.keys(), 'manifest.json']));
@@ -135,7 +144,7 @@ async function fill(
       ...reading,
       keepNames,
       unknown: layout.threeValued,
-      lanes: 1 as const,
+      lanes,
       ...(npmName && { name: npmName.name }),
     },
     resets,

@@ -30,13 +30,13 @@ export function packageJsonText(
       '.': { types: './model.d.ts', default: './model.mjs' },
       './model.mjs': { types: './model.d.ts', default: './model.mjs' },
       './model.wasm': './model.wasm',
-      './worker.mjs': './worker.mjs',
+      ...(files.includes('worker.mjs') && { './worker.mjs': './worker.mjs' }),
       './manifest.json': './manifest.json',
       './package.json': './package.json',
     },
     types: './model.d.ts',
     files: files.filter((file) => file !== 'package.json').sort(),
-    sideEffects: ['./worker.mjs'],
+    sideEffects: files.includes('worker.mjs') ? ['./worker.mjs'] : false,
   };
   return `${JSON.stringify(content, null, 2)}\n`;
 }

@@ -8,6 +8,7 @@ import type { ResetPort } from './resets.js';
 /** What the README of a package tells of. */
 export interface ReadmeFacts {
   readonly layout: ModelLayout;
+  readonly lanes: number;
   readonly resets: readonly ResetPort[];
   readonly nets: readonly KeptNet[];
   readonly memories: readonly KeptMemory[];
@@ -52,35 +53,22 @@ ports have their types.
 ${portSections(facts)}
 ## What you can do
 
-| call | what it does |
-|---|---|
-| \`await load()\` | loads the model; each call makes an instance of its own |
-| \`load(source, options)\` | from an address, bytes, a response or \`await compile()\`; \`verify: true\` checks the hash, \`powerUp\` and \`seed\` say how registers start |
-| \`model.write({ ${sampleInput(layout)} })\` | gives inputs new values, the others keep theirs |
-| \`model.read()\`, \`model.read('${sampleOutput(layout)}')\` | all outputs, or one port |
-| \`model.step(n)\` | lets n cycles pass (1 unless given) |
-| \`model.run({ cycles, stimulus, response })\` | many cycles on typed arrays, one column a port |
-| \`model.runUntil({ ${sampleOutput(layout)}: … }, limit)\` | runs until outputs have these values, or a function says so |
-| \`model.peek(name)\` | looks at a register, a kept net or a word of a memory inside |
-| \`model.save()\`, \`model.restore(saved)\` | the whole state as plain data for JSON, and back |
-| \`model.reset()\` | back to power-up |
-| \`model.subscribe(listener, names)\` | tells which ports changed, after each call that changed some |
-| \`model.dispose()\` | lets go of everything |
-| \`await loadInWorker()\` | the same in a worker: a promise for each answer, \`{ onProgress, signal }\` for long calls |
+${facts.lanes === 1 ? singleCalls(layout) : laneCalls(layout, facts.lanes)}
 
 The model is always settled: outputs that depend on inputs directly change with \`write\`, registers
 change with \`step\`. What \`read\` shows is what row k of a response would hold in the next cycle.
 Misuse throws \`RangeError\` or \`TypeError\` and says what was expected and what came.
 ${layout.threeValued ? UNKNOWN : ''}
-A saved state fits every package made of the same netlist, and is refused by others.
+A saved state fits every package made of the same netlist, of one sequence or of many, and is
+refused by others.
 
 ## Where it runs
 
 - Pages, workers, Node 20 and later, and other runtimes with WebAssembly (with its 128-bit vectors).
 - Under a strict content security policy: \`script-src 'self' 'wasm-unsafe-eval'; connect-src 'self'\`
-  (and \`worker-src 'self'\` for \`loadInWorker\`). Nothing is evaluated from text.
+  (and \`worker-src 'self'\` for ${facts.lanes === 1 ? '`loadInWorker`' : 'a worker'}). Nothing is evaluated from text.
 - Bundlers that know \`new URL('./model.wasm', import.meta.url)\` need no setting. For others copy
-  \`model.wasm\` (and \`worker.mjs\`, \`model.mjs\` for workers) beside the bundle, or pass its address:
+  \`model.wasm\`${facts.lanes === 1 ? ' (and `worker.mjs`, `model.mjs` for workers)' : ''} beside the bundle, or pass its address:
   \`load(address)\`.
 - A server should send \`model.wasm\` as \`application/wasm\`: it is then compiled while it arrives.
 
@@ -177,3 +165,41 @@ const sampleInput = ({ inputs }: ModelLayout): string => {
 };
 
 const sampleOutput = ({ outputs }: ModelLayout): string => key(outputs.ports[0]?.name ?? 'name');
+
+const singleCalls = (layout: ModelLayout): string => `| call | what it does |
+|---|---|
+| \`await load()\` | loads the model; each call makes an instance of its own |
+| \`load(source, options)\` | from an address, bytes, a response or \`await compile()\`; \`load(undefined, { verify: true })\` checks the hash, \`powerUp\` and \`seed\` say how registers start |
+| \`model.write({ ${sampleInput(layout)} })\` | gives inputs new values, the others keep theirs |
+| \`model.read()\`, \`model.read('${sampleOutput(layout)}')\` | all outputs, or one port |
+| \`model.step(n)\` | lets n cycles pass (1 unless given) |
+| \`model.run({ cycles, stimulus, response })\` | many cycles on typed arrays, one column a port |
+| \`model.runUntil({ ${sampleOutput(layout)}: … }, limit)\` | runs until outputs have these values, or a function says so |
+| \`model.peek(name)\` | looks at a register, a kept net or a word of a memory inside |
+| \`model.save()\`, \`model.restore(saved)\` | the whole state as plain data for JSON, and back |
+| \`model.reset()\` | back to power-up |
+| \`model.subscribe(listener, names)\` | tells which ports changed, after each call that changed some |
+| \`model.dispose()\` | lets go of everything |
+| \`await loadInWorker()\` | the same in a worker: a promise for each answer, \`{ onProgress, signal }\` for long calls |`;
+
+const laneCalls = (
+  layout: ModelLayout,
+  lanes: number,
+): string => `${lanes} independent sequences run side by side, lanes 0 to ${lanes - 1}: their clock ticks together, their
+inputs and states are their own. Where a lane is left out, all of them are meant.
+
+| call | what it does |
+|---|---|
+| \`await load()\` | loads the model; each call makes an instance of its own |
+| \`load(source, options)\` | from an address, bytes, a response or \`await compile()\`; \`load(undefined, { verify: true })\` checks the hash, \`powerUp\` and \`seed\` say how registers start: lane l at random as seed + l says |
+| \`model.write({ ${sampleInput(layout)} }, 5)\` | gives inputs of lane 5 new values, the others keep theirs; without the lane, those of all lanes |
+| \`model.read('${sampleOutput(layout)}', 5)\`, \`model.read(5)\` | a port of lane 5, or all its outputs |
+| \`model.read('${sampleOutput(layout)}')\`, \`model.read()\` | the same of all lanes, a list with a value for each |
+| \`model.step(n)\` | lets n cycles pass (1 unless given) |
+| \`model.run({ cycles, stimulus, response })\` | many cycles on typed arrays: for each input one column for all lanes or a list with one for each, for each output a list of columns |
+| \`model.runUntil({ ${sampleOutput(layout)}: … }, limit)\` | runs until outputs have had these values in each lane; \`first\` tells when |
+| \`model.peek(name, 5)\` | looks at a register or a kept net inside |
+| \`model.save(5)\`, \`model.restore(saved, 5)\` | the whole state of a lane as plain data for JSON, and back |
+| \`model.reset(5)\` | back to power-up |
+| \`model.faults\` | lanes that have ended because a cycle has no result; the others go on |
+| \`model.dispose()\` | lets go of everything |`;

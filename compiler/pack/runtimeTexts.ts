@@ -11,7 +11,7 @@ export function bundledText(name: string): string {
 export function modelModule(identity: PackageIdentity, version: string): string {
   return `${head(identity.name, version)}
 const CLOCKSTRIDE_PACKAGE = ${JSON.stringify(identity)};
-${bundledText('model.js')}`;
+${bundledText(identity.lanes === 1 ? 'model.js' : 'lanes.js')}`;
 }
 
 /** The text of `worker.mjs`. */

@@ -60,7 +60,11 @@ export class Core {
   }
 
   /** A new instance of a module; call `start` before anything else. */
-  static async create({ description, module, probes }: DescribedModule): Promise<Core> {
+  static async create({
+    description,
+    module,
+    probes,
+  }: DescribedModule<ModelDescription>): Promise<Core> {
     const instance = (model: BareModel, code: WebAssembly.Module) =>
       ModelEngine.create(model, code);
     const probing = probes && description.probes && (await instance(description.probes, probes));

@@ -1,16 +1,16 @@
 import {
   DESCRIPTION_FORMAT,
   DESCRIPTION_SECTION,
-  type ModelDescription,
+  type Description,
   PROBES_SECTION,
 } from './description.js';
 import { identity } from './identity.js';
 import { unfolded } from './tables.js';
 
 /** A compiled module and what it says of itself. */
-export interface DescribedModule {
+export interface DescribedModule<D extends Description = Description> {
   readonly module: WebAssembly.Module;
-  readonly description: ModelDescription;
+  readonly description: D;
   readonly probes: WebAssembly.Module | undefined;
 }
 
@@ -18,12 +18,14 @@ export interface DescribedModule {
 const known = new WeakMap<WebAssembly.Module, Promise<DescribedModule>>();
 
 /** Reads the description of a module. Throws TypeError where it is not that of this package. */
-export function described(module: WebAssembly.Module): Promise<DescribedModule> {
+export function described<D extends Description>(
+  module: WebAssembly.Module,
+): Promise<DescribedModule<D>> {
   const earlier = known.get(module);
-  if (earlier !== undefined) return earlier;
-  const made = describe(module);
-  known.set(module, made);
-  return made;
+  const made = earlier ?? describe(module);
+  if (earlier === undefined) known.set(module, made);
+  // What it is was checked by `checkIdentity`.
+  return made as Promise<DescribedModule<D>>;
 }
 
 async function describe(module: WebAssembly.Module): Promise<DescribedModule> {
@@ -31,16 +33,16 @@ async function describe(module: WebAssembly.Module): Promise<DescribedModule> {
   if (section === undefined) {
     throw new TypeError(`expected the module of ${identity.name}, got one without a description`);
   }
-  const description = unfolded(JSON.parse(new TextDecoder().decode(section))) as ModelDescription;
+  const description = unfolded(JSON.parse(new TextDecoder().decode(section))) as Description;
   checkIdentity(description);
   const [probes] = WebAssembly.Module.customSections(module, PROBES_SECTION);
   return { module, description, probes: probes && (await WebAssembly.compile(probes)) };
 }
 
-function checkIdentity({ format, lanes, netlist, model }: ModelDescription): void {
-  if (format !== DESCRIPTION_FORMAT || lanes !== 1) {
-    const expected = `a module of format ${DESCRIPTION_FORMAT} with 1 lane`;
-    throw new TypeError(`expected ${expected}, got format ${format} with ${lanes}`);
+function checkIdentity({ format, lanes, netlist, model }: Description): void {
+  if (format !== DESCRIPTION_FORMAT || lanes !== identity.lanes) {
+    const own = `format ${DESCRIPTION_FORMAT} with ${identity.lanes} lanes`;
+    throw new TypeError(`expected a module of ${own}, got format ${format} with ${lanes}`);
   }
   const { name, threeValued } = model.layout;
   if (netlist === identity.netlist && threeValued === identity.threeValued) return;

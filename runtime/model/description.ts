@@ -1,3 +1,6 @@
+import type { LaneCount } from '../laneLayout.js';
+import type { BareLaneModel } from '../laneModel.js';
+import type { ModelLayout } from '../layout.js';
 import type { WasmModel } from '../wasmModel.js';
 
 /** Custom section of `model.wasm` that holds the description, as JSON. */
@@ -33,14 +36,14 @@ export interface KeptMemory {
   readonly from: number;
 }
 
-/** What travels inside `model.wasm` beside its code. */
-export interface ModelDescription {
+/** What travels inside `model.wasm` beside its code, whatever it is compiled for. */
+export interface Description {
   readonly format: typeof DESCRIPTION_FORMAT;
   /** Fingerprint of what was compiled: sources, top module and clocks. */
   readonly netlist: string;
   /** Independent sequences that run side by side. */
-  readonly lanes: 1;
-  readonly model: Omit<WasmModel, 'bytes'>;
+  readonly lanes: 1 | LaneCount;
+  readonly model: { readonly layout: ModelLayout };
   /** For each state element the value that the netlist gives at power-up: `0`, `1` or `x` for none. */
   readonly initial: string;
   /** Cycles after which the clocks' pattern repeats. */
@@ -49,4 +52,16 @@ export interface ModelDescription {
   readonly memories: readonly KeptMemory[];
   /** Of the module that computes kept nets; absent where all of them are state. */
   readonly probes?: Omit<WasmModel, 'bytes'>;
+}
+
+/** Of a package that runs one sequence. */
+export interface ModelDescription extends Description {
+  readonly lanes: 1;
+  readonly model: Omit<WasmModel, 'bytes'>;
+}
+
+/** Of a package that runs many side by side. */
+export interface LaneDescription extends Description {
+  readonly lanes: LaneCount;
+  readonly model: BareLaneModel;
 }

@@ -1,3 +1,5 @@
+import type { LaneCount } from '../laneLayout.js';
+
 /** What `model.mjs` knows of the package that it is part of. */
 export interface PackageIdentity {
   /** Name of the top module. */
@@ -7,6 +9,8 @@ export interface PackageIdentity {
   /** Fingerprint of what was compiled; packages of the same netlist have the same. */
   readonly netlist: string;
   readonly threeValued: boolean;
+  /** Independent sequences that run side by side. */
+  readonly lanes: 1 | LaneCount;
 }
 
 /** Stands in front of the bundled text in every package. */

@@ -1,15 +1,20 @@
 import { formatValue } from '../valueText.js';
 import type { Core } from './core.js';
-import type { KeptMemory, KeptNet } from './description.js';
+import type { Description, KeptMemory, KeptNet } from './description.js';
 import { readValue, shown, type Value } from './values.js';
+
+/** What is looked at: a model, or a lane of it. */
+export type Looked = Pick<Core, 'layout' | 'memories' | 'probed' | 'row' | 'state'> & {
+  readonly description: Pick<Description, 'nets' | 'memories' | 'probes'>;
+};
 
 /** Looks at kept nets by name. */
 export class Nets {
   readonly list: readonly KeptNet[];
-  readonly #core: Core;
+  readonly #core: Looked;
   readonly #byName: ReadonlyMap<string, KeptNet>;
 
-  constructor(core: Core) {
+  constructor(core: Looked) {
     this.#core = core;
     this.list = core.description.nets;
     this.#byName = new Map(this.list.map((net) => [net.name, net]));

@@ -1,5 +1,5 @@
 import { powerUpSeed, RandomBits } from '../random.js';
-import type { ModelDescription } from './description.js';
+import type { Description } from './description.js';
 import { shown } from './values.js';
 
 /** How state elements start to which the netlist gives no value. */
@@ -12,7 +12,7 @@ export interface PowerUpOptions {
 
 /** The state at power-up: 0, 1 or 2 for x. Throws RangeError for what the model cannot do. */
 export function powerUpState(
-  { initial, model }: ModelDescription,
+  { initial, model }: Description,
   { powerUp, seed = 0 }: PowerUpOptions,
 ): Uint8Array {
   const { threeValued } = model.layout;

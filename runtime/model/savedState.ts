@@ -1,7 +1,7 @@
 import { rowStride } from '../layout.js';
 import { fromBase64, toBase64 } from './base64.js';
 import type { Standing } from './core.js';
-import type { ModelDescription } from './description.js';
+import type { Description } from './description.js';
 import { sha256 } from './sha256.js';
 import { shown } from './values.js';
 
@@ -34,7 +34,7 @@ export interface SavedState {
 const FORMAT = 'clockstride-state-1';
 
 /** Writes down where a model stands. */
-export function saved(description: ModelDescription, standing: Standing): SavedState {
+export function saved(description: Description, standing: Standing): SavedState {
   const { layout } = description.model;
   const { state, inputs, before, memories, cycle } = standing;
   const unknown = packed(state, 2);
@@ -57,7 +57,7 @@ export function saved(description: ModelDescription, standing: Standing): SavedS
  * RangeError for one that this model cannot take.
  */
 export function standingOf(
-  description: ModelDescription,
+  description: Description,
   given: unknown,
   memoryBytes: number,
 ): Standing {
@@ -113,7 +113,7 @@ function fieldsOf(given: unknown): Fields {
   return save as Fields;
 }
 
-function refuseForeign(description: ModelDescription, { model, netlist, elements }: Fields): void {
+function refuseForeign(description: Description, { model, netlist, elements }: Fields): void {
   const { name } = description.model.layout;
   if (netlist !== description.netlist) {
     const own = `${name} (netlist ${description.netlist})`;
@@ -128,9 +128,9 @@ function refuseForeign(description: ModelDescription, { model, netlist, elements
 }
 
 const DIGITS = 16;
-const elementDigests = new WeakMap<ModelDescription, string>();
+const elementDigests = new WeakMap<Description, string>();
 
-function elementsOf(description: ModelDescription): string {
+function elementsOf(description: Description): string {
   const known = elementDigests.get(description);
   if (known !== undefined) return known;
   const names = description.model.layout.stateNames.join('\n');
@@ -146,7 +146,7 @@ function packed(state: Uint8Array, value: number): Uint8Array {
 }
 
 function rowFields(
-  { model: { layout } }: ModelDescription,
+  { model: { layout } }: Description,
   row: Uint32Array,
   values: string,
   unknown: string,
@@ -164,7 +164,7 @@ function rowFields(
 }
 
 function rowOf(
-  { model: { layout } }: ModelDescription,
+  { model: { layout } }: Description,
   save: Fields,
   values: string,
   unknown: string,

@@ -33,6 +33,12 @@ export async function compiled(
   throw new TypeError(`expected an address, bytes or a module, got ${shown(found)}`);
 }
 
+/** Compiles the module once, for several instances or for a worker. */
+export const compile = (
+  source: ModelSource | Promise<ModelSource> = packagedModule(),
+  { verify = false }: { readonly verify?: boolean } = {},
+): Promise<WebAssembly.Module> => compiled(source, verify);
+
 async function checked(source: BufferSource, verify: boolean): Promise<WebAssembly.Module> {
   if (verify) {
     const bytes = ArrayBuffer.isView(source)

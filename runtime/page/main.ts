@@ -1,5 +1,5 @@
 import { fromBase64 } from '../model/base64.js';
-import { compile } from '../model/load.js';
+import { compile } from '../model/source.js';
 import { App } from './app.js';
 import { viewIn } from './link.js';
 import { type About, Session } from './session.js';

@@ -12,7 +12,14 @@ const netlist = `module gray(input clk, input hold, output [3:0] code);
 endmodule
 `;
 
-const work = new WorkFolder({ 'gray.v': netlist, 'bad.v': 'module bad(input a' });
+const ram = `module ram(input clk, input [5:0] at, output [7:0] q);
+  reg [7:0] m [0:63];
+  assign q = m[at];
+  always @(posedge clk) m[at] <= q + 1;
+endmodule
+`;
+
+const work = new WorkFolder({ 'gray.v': netlist, 'ram.v': ram, 'bad.v': 'module bad(input a' });
 
 describe('clockstride pack', () => {
   it('writes a package and tells of it', async () => {
@@ -70,11 +77,31 @@ describe('clockstride pack', () => {
     [['--name', 'Gray Code'], 'Give a package name in lower case'],
     [['--keep-names', 'all', '--keep-names', 'x'], 'Give all, ports, or patterns.'],
     [['--clock', 'nix=4'], 'error: --clock: '],
+    [['--lanes', '12'], 'Allowed choices are 1, 32, 64, 128.'],
   ])('refuses %j', async (options, message) => {
     const { status, stderr } = await work.run('pack', 'gray.v', '--output', 'no', ...options);
     expect(status).toBe(2);
     expect(stderr).toContain(message);
     expect(work.names()).not.toContain('no');
+  });
+
+  it('packs lanes, which a page and memories do not have', async () => {
+    const lanes = ['--output', 'lanes', '--lanes', '32', '--json'];
+    const { status, stdout } = await work.run('pack', 'gray.v', ...lanes);
+    expect(status).toBe(0);
+    expect(JSON.parse(stdout).check.lanes).toEqual([0, 1, 16, 31]);
+    expect(JSON.parse(work.read('lanes/manifest.json')).options.lanes).toBe(32);
+    const page = await work.run('pack', 'gray.v', ...lanes, '--page', 'gray.html');
+    expect([page.status, page.stderr]).toEqual([
+      2,
+      'error: a page shows one sequence; give --lanes without --page\n',
+    ]);
+    const ram = await work.run('pack', 'ram.v', ...lanes);
+    expect([ram.status, ram.stderr]).toEqual([
+      2,
+      'error: lanes run no memories, and m is one; build it from registers with ' +
+        '--memories-from 65537, or leave its module out by --black-box\n',
+    ]);
   });
 
   it('refuses to go without an output or a page', async () => {

@@ -123,8 +123,44 @@ model.runUntil({ toString: 1 }, 3);
 model.run({ cycles: 1, stimulus: { constructor: [1] } });
 `;
 
+const lanes = `
+import { load, type EachLane, type SavedState } from 'PACKAGE';
+
+const model = await load(undefined, { powerUp: 'random', seed: 3 });
+const count: 32 = model.lanes;
+const word: number = model.write({ go: 1 }).write({ few: 3 }, 5).step().read('word', 5);
+const blocks: EachLane<bigint> = model.read().block;
+const block: bigint = model.read(31).block;
+const held: readonly bigint[] = model.peek('held');
+const states: readonly SavedState[] = model.save();
+model.restore(states).restore(model.save(3), 4).restore(JSON.stringify(states[0])).reset(4).reset();
+const few = [new Uint8Array(2), new Uint8Array(2)];
+const { response } = model.run({ cycles: 2, stimulus: { few, go: new Uint8Array(2) }, response: ['word'] });
+const column: Uint32Array = response.word[31]!;
+const { met, first } = model.runUntil({ word: 3 }, 10);
+const after: number | undefined = first[5];
+export const all = [count, word, blocks, block, held, column, met, after, model.faults[0]?.lane];
+
+// @ts-expect-error
+model.write({ gone: 1 }, 5);
+// @ts-expect-error
+model.write({ few: 1n }, 5);
+// @ts-expect-error
+export const wide: number = model.read('block', 5);
+// @ts-expect-error
+model.read(5, 'block');
+// @ts-expect-error
+response.block;
+// @ts-expect-error
+model.run({ cycles: 1, stimulus: { few: [1] } });
+// @ts-expect-error
+model.runUntil((m) => true, 3);
+// @ts-expect-error
+model.restore(states, 4);
+`;
+
 const root = packageFolder();
-const consumers = { mix: twoValued, mix3: threeValued, names: namedTwice };
+const consumers = { mix: twoValued, mix3: threeValued, names: namedTwice, lanes };
 const tsc = fileURLToPath(new URL('../../node_modules/typescript/bin/tsc', import.meta.url));
 
 beforeAll(async () => {
@@ -133,6 +169,8 @@ beforeAll(async () => {
   await packInto(join(root, 'mix'), designOf(circuit), npmName('mix'));
   await packInto(join(root, 'mix3'), designOf(circuit, { threeValued: true }), npmName('mix3'));
   await packInto(join(root, 'names'), designFrom(new Source('names.v', names)), npmName('names'));
+  const withoutMemory = designFrom(new Source('mix.v', netlist.replace(/^.*ra`m.*$/gm, '')));
+  await packInto(join(root, 'lanes'), withoutMemory, { ...npmName('lanes'), lanes: 32 });
   mkdirSync(join(root, 'node_modules'));
   for (const [name, text] of Object.entries(consumers)) {
     symlinkSync(join(root, name), join(root, 'node_modules', name));

@@ -6,6 +6,7 @@ import { afterAll } from 'vitest';
 import type { Design } from '../../compiler/compile.js';
 import { type PackRequest, type PackSummary, packDesign } from '../../compiler/pack/packDesign.js';
 import type * as packaged from '../../runtime/model/index.js';
+import type * as lanes from '../../runtime/model/lanes/index.js';
 
 /** What `model.mjs` of a package exports. */
 export type ModelModule = typeof packaged;
@@ -27,4 +28,8 @@ export const packInto = (
 
 /** The module of a package, as a program imports it. */
 export const importPackage = (folder: string): Promise<ModelModule> =>
+  import(pathToFileURL(join(folder, 'model.mjs')).href);
+
+/** The module of a package of many lanes. */
+export const importLanes = (folder: string): Promise<typeof lanes> =>
   import(pathToFileURL(join(folder, 'model.mjs')).href);
