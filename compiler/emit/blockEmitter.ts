@@ -10,6 +10,7 @@ import {
   ProgramOp,
 } from '../program/program.js';
 import type { AreaLayout } from './areaLayout.js';
+import { fence, STRETCH } from './fence.js';
 import { type BitWindow, BlockWords } from './memory/blockWords.js';
 import { numberCode } from './memory/numberCode.js';
 import { pointerCode, wordCode } from './memory/wordCode.js';
@@ -45,7 +46,8 @@ const zeros = new Array<number>(16).fill(0);
 const DEPTH_LIMIT = 24;
 
 /**
- * Emits the operations of one block as straight-line code.
+ * Emits the operations of one block as straight-line code, with a fence after each stretch. It must
+ * stand in a block labelled `LEAVE`.
  *
  * A value read once becomes part of its reader's expression; others get a local. Only bit 0 of a
  * value counts: inputs are shifted down and not masked, and `not` inverts all bits.
@@ -91,7 +93,13 @@ export class BlockEmitter {
   emit(kept: Iterable<number> = []): void {
     this.#countReads();
     for (const value of kept) this.#reads.set(value, (this.#reads.get(value) ?? 0) + 2);
-    for (let i = this.#start; i < this.#end; i++) this.#emitOperation(i);
+    const { module, i32 } = this.#emission;
+    for (let i = this.#start; i < this.#end; i++) {
+      this.#emitOperation(i);
+      const done = i + 1 - this.#start;
+      if (done % STRETCH !== 0 || i + 1 === this.#end) continue;
+      this.statements.push(fence(module, i32, this.#pointers.current, done / STRETCH));
+    }
   }
 
   /** Stores a value that no operation of the block makes. */

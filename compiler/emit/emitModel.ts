@@ -12,6 +12,7 @@ import type { PassSwitches } from '../program/switches.js';
 import { type AreaLayout, layArea } from './areaLayout.js';
 import { BlockEmitter, type Emission, type Pointers } from './blockEmitter.js';
 import { compareState } from './compareState.js';
+import { LEAVE, STRETCH } from './fence.js';
 import { emitWrites } from './memory/writeCode.js';
 import { packedCycle } from './packedCycle.js';
 import {
@@ -157,7 +158,9 @@ function plainCode(
   const { i32 } = wasm;
   const isSmall = program.blockStart.length === 2 && program.stateCount < COPIES_IN_BLOCK;
   const groups = outputGroups(program, passes.aliasOutputs);
-  const packsValues = isSmall && program.outputs.length <= SCALAR_OUTPUTS;
+  // Beyond a stretch, what only the end of a cycle reads would be computed there.
+  const { length } = program.outputs;
+  const packsValues = isSmall && length <= SCALAR_OUTPUTS && program.op.length <= STRETCH;
   const sinks = storesOf(program, area, packsValues ? [] : outputsInMemory(groups));
   const emission: Emission = { module, i32, program, area, sinks, memories };
   const { statements, localCount } = isSmall
@@ -211,7 +214,7 @@ function callCycle(
   const statements: binaryen.ExpressionRef[] = [];
   const add = (name: string, body: binaryen.ExpressionRef[], localCount: number): void => {
     const locals = new Array<binaryen.Type>(localCount - 3).fill(i32);
-    module.addFunction(name, parameters, none, locals, module.block(null, body));
+    module.addFunction(name, parameters, none, locals, module.block(LEAVE, body));
     const { Current, Next, Row } = RunLocal;
     const pointers = [Current, Next, Row].map((local) => module.local.get(local, i32));
     statements.push(module.call(name, pointers, none));

@@ -1,5 +1,6 @@
 import type binaryen from 'binaryen';
 import { BlockEmitter, type Emission } from './blockEmitter.js';
+import { LEAVE } from './fence.js';
 import { RunLocal } from './runLoop.js';
 import type { Copy } from './sinks.js';
 import { VectorEmitter } from './vectorEmitter.js';
@@ -101,7 +102,7 @@ class PackedCycle {
       createType([i32, i32, i32, i32]),
       none,
       locals,
-      module.block(null, body),
+      module.block(LEAVE, body),
     );
     const { Current, Next, Row, Response } = RunLocal;
     const pointers = [Current, Next, Row, Response].map((local) => module.local.get(local, i32));

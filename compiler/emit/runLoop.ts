@@ -1,5 +1,6 @@
 import type binaryen from 'binaryen';
 import type { Pointers } from './blockEmitter.js';
+import { LEAVE } from './fence.js';
 
 /** Locals of the exported `run`, parameters first. */
 export const RunLocal = {
@@ -79,7 +80,7 @@ export function runLoop(
     local.set(RunLocal.Current, global.get('current', type)),
     local.set(RunLocal.Next, other()),
     local.set(RunLocal.Left, get(RunLocal.Cycles)),
-    module.if(get(RunLocal.Left), module.loop('cycle', body)),
+    module.block(LEAVE, [module.if(get(RunLocal.Left), module.loop('cycle', body))]),
     ...finish(),
   ]);
 }
