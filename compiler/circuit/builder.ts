@@ -170,6 +170,13 @@ export class CircuitBuilder {
     return output;
   }
 
+  /** Gives the registers and latches that drive certain nets other values at power-up. */
+  setInitials(values: ReadonlyMap<number, 0 | 1>): void {
+    if (values.size === 0) return;
+    this.#registers.setInitials(values);
+    this.#latches.setInitials(values);
+  }
+
   /** Adds the table of a cell whose gate, register or latch drives `output`. */
   table(output: NetId, inputs: readonly NetId[], table: CellTable): void {
     this.#tables.add(output, inputs, table);

@@ -59,6 +59,14 @@ export class PinTable {
     }
   }
 
+  /** Sets the power-up values of the elements that drive certain nets. */
+  setInitials(values: ReadonlyMap<number, 0 | 1>): void {
+    for (let i = 0; i < this.#output.length; i++) {
+      const value = values.get(this.#output.get(i));
+      if (value !== undefined) this.#initial.set(i, value);
+    }
+  }
+
   /** Sets the marks of all nets at input pins. */
   markReads(isRead: Uint8Array): void {
     for (const pins of [this.#control, this.#data, this.#set, this.#reset]) {

@@ -33,6 +33,8 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
     net: netId(find(net)),
     outside,
   }));
+  // What drives an own variable has taken its value along.
+  const farInitials = [...body.initialValues].filter(([net]) => !builder.isDriven(net));
   const template: Template = {
     name: body.text(module.name),
     isCell: module.isCell,
@@ -49,6 +51,7 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
     blocks: blockNamesOf(body, find),
     scope: body.root,
     netTypes: netTypesOf(classes, find),
+    ...(farInitials.length > 0 && { farInitials }),
     ...(body.dependsOnPlace && { outerNets }),
   };
   const { driven } = design;

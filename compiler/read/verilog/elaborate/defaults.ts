@@ -70,12 +70,13 @@ export function netTypesOf(
 
 /** Gives a variable that nothing assigns its value at power-up. */
 export function driveDefaults(
-  { builder, initialValues }: ModuleBody,
+  { builder, initialValues, outerNets }: ModuleBody,
   usage: Usage,
   boundary: Boundary,
 ): void {
   if (initialValues.size === 0) return;
   const outside = drivenOutside(builder, boundary);
+  for (const net of outerNets.values()) outside.add(builder.find(net));
   for (const [net, value] of initialValues) {
     const root = builder.find(net);
     if (usage.driveOf(root) !== Drive.None || outside.has(root)) continue;

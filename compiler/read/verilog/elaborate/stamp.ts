@@ -44,6 +44,8 @@ export class Stamper {
   #scratch = new Uint32Array(64);
   /** Index of the names of each template's first block in the circuit. */
   readonly #modules = new Map<Template, number>();
+  /** Values at power-up that other modules give to state elements, by the circuit's net. */
+  readonly #farInitials = new Map<number, 0 | 1>();
   /** The black boxes stamped so far. */
   readonly boxes: PlacedBox[] = [];
 
@@ -65,6 +67,7 @@ export class Stamper {
       if (current.nextChild === current.template.children.count) depth--;
       else if (this.#stampChild(current, current.nextChild++, depth + 1)) depth++;
     }
+    this.#builder.setInitials(this.#farInitials);
     return boundary;
   }
 
@@ -146,6 +149,7 @@ export class Stamper {
       const own = inputs.map((net) => netId(nets[net]!));
       builder.table(driven!.get(nets[output]!)!, own, table);
     }
+    for (const [net, value] of template.farInitials ?? []) this.#farInitials.set(nets[net]!, value);
     for (const [net, type] of template.netTypes ?? []) {
       builder.setNetType(netId(nets[net]!), type);
     }

@@ -89,6 +89,8 @@ export interface Template {
   readonly scope: BlockScope | undefined;
   /** The nets whose type says more than `wire`; absent where there is none. */
   readonly netTypes?: readonly (readonly [net: number, type: NetType])[];
+  /** Values at power-up of variables of other modules; absent where there is none. */
+  readonly farInitials?: readonly (readonly [net: number, value: 0 | 1])[];
   /** The `Drive` of any net. */
   driveOf(net: NetId): number;
   /** Whether the module or its instances read a net. */

@@ -126,6 +126,26 @@ describe('names that lead down', () => {
     expect(signalValue(circuit, 'z', { a: 1 })).toBe(1);
   });
 
+  it('give variables of other modules their values at power-up', () => {
+    const circuit = circuitOf(`
+      module leaf (input clk, output [1:0] q); reg [1:0] r; reg [1:0] m [0:1];
+        always @(posedge clk) begin r <= ~r; m[0] <= r; m[1] <= m[0]; end
+        assign q = r ^ m[1];
+      endmodule
+      module mid (input clk, output [1:0] q); leaf u (clk, q); initial t.own = 1; endmodule
+      module t (input clk, output [1:0] a, b, output reg own);
+        mid m (clk, a); leaf n (clk, b);
+        initial begin m.u.r = 2'd1; m.u.m[1] = 2'd2; n.m[0] = 2'b1x; end
+        always @(posedge clk) own <= ~own;
+      endmodule`);
+    const { output, initial } = circuit.registers;
+    const values = ['m.u.r', 'm.u.m[1]', 'm.u.m[0]', 'n.r', 'n.m[0]', 'own'].map((path) => {
+      const bits = netsOf(circuit, path).map((net) => initial[output.indexOf(net)]);
+      return bits.reverse().join('');
+    });
+    expect(values).toEqual(['01', '10', '22', '22', '12', '1']);
+  });
+
   it('that only read leave the warning where nothing drives', () => {
     const text = `module leaf (output y);\n wire n; not (y, n); endmodule
       module t (output y, z); leaf u (y); assign z = u.n; endmodule`;
