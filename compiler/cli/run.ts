@@ -38,6 +38,7 @@ import {
   type ResponseOptions,
   responseOutlets,
 } from './run/responseOptions.js';
+import { addStatesOptions, type StatesOptions, statesOutlets } from './run/statesOptions.js';
 import { addStimulusOptions, type StimulusOptions } from './run/stimulusOptions.js';
 import { addStopOptions, type StopOptions, stopsOf } from './run/stopOptions.js';
 import {
@@ -65,6 +66,7 @@ export interface RunOptions
     StopOptions,
     WaveOptions,
     ActivityOptions,
+    StatesOptions,
     RecordOptions,
     ResponseOptions,
     ExpectationOptions {
@@ -88,6 +90,7 @@ export function runCommand(
   addExpectationOptions(command);
   addWindowOptions(addWaveOptions(command), false);
   addActivityOptions(command);
+  addStatesOptions(command);
   addRecordOptions(command);
   addCacheOption(command);
   return command
@@ -151,7 +154,11 @@ export async function run(
     ...{ design, engine: options.engine, powerUp, seed: options.seed, onDeparture: tell },
     ...(emitter && { emitter }),
   });
-  const waves = [...waveOutlets(design, options), ...activityOutlets(design, options, emitter)];
+  const waves = [
+    ...waveOutlets(design, options),
+    ...activityOutlets(design, options, emitter),
+    ...statesOutlets(design, options),
+  ];
   const stops = stopsOf(design, options, options.record);
   const interrupt = new AbortController();
   process.once('SIGINT', () => {

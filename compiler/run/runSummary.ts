@@ -3,6 +3,7 @@ import type { PowerUp } from '../circuit/powerUp.js';
 import type { EngineName } from '../engines.js';
 import { type ActivitySummary, activityLines } from './outlets/activitySummary.js';
 import { type BusEvent, busEventText } from './outlets/busEvent.js';
+import { type StatesSummary, statesLines } from './outlets/statesSummary.js';
 
 /** What a run came to; printed as it stands by `run --json`. */
 export interface RunSummary {
@@ -34,6 +35,8 @@ export interface RunSummary {
   readonly buses?: readonly BusEvent[];
   /** What the nets did, where that was counted. */
   readonly activity?: ActivitySummary;
+  /** The state machines that were followed. */
+  readonly states?: readonly StatesSummary[];
   readonly notes: readonly string[];
 }
 
@@ -71,7 +74,7 @@ export function summaryText(summary: RunSummary, expectation: string | undefined
   if (summary.repetition !== undefined) lines.push(repetitionText(summary.repetition));
   if (summary.unknownRegisters !== undefined) lines.push(unknownText(summary.unknownRegisters));
   lines.push(...busLines(summary.buses ?? []));
-  lines.push(...activityLines(summary.activity));
+  lines.push(...activityLines(summary.activity), ...statesLines(summary.states));
   if (summary.stopped !== undefined && isTold(summary)) {
     lines.push(`stopped at cycle ${count(summary.stopped.cycle)}: ${summary.stopped.reason}`);
   }

@@ -1,0 +1,38 @@
+import type { Circuit } from '../circuit/circuit.js';
+import { type SignalList, signalName, signalsOf } from '../waveform/signalList.js';
+
+/** Bits that make up a state together. */
+export interface StateVector {
+  readonly name: string;
+  /** Least significant first. */
+  readonly nets: Uint32Array;
+}
+
+/**
+ * The vectors that texts choose: each signal that a pattern matches (see `namePattern`), or all that
+ * stand between braces, `{a, b[1:0]}`, as one, the first most significant as IEEE 1364 joins them.
+ *
+ * Throws `UnmatchedPattern`.
+ */
+export function stateVectors(circuit: Circuit, texts: readonly string[]): StateVector[] {
+  const found = texts.flatMap((text): StateVector[] => {
+    const [, inside] = /^\s*\{(.*)\}\s*$/s.exec(text) ?? [];
+    if (inside === undefined) return eachOf(circuit, text);
+    const parts = inside.split(',').flatMap((part) => eachOf(circuit, part.trim()));
+    const nets = parts.toReversed().flatMap((part) => Array.from(part.nets));
+    const name = `{${parts.map((part) => part.name).join(', ')}}`;
+    return [{ name, nets: Uint32Array.from(nets) }];
+  });
+  return [...new Map(found.map((vector) => [vector.name, vector])).values()];
+}
+
+function eachOf(circuit: Circuit, pattern: string): StateVector[] {
+  const list = signalsOf(circuit, [pattern]);
+  return Array.from({ length: list.count }, (_, entry) => ({
+    name: signalName(circuit.hierarchy, list, entry),
+    nets: netsOf(list, entry),
+  }));
+}
+
+const netsOf = ({ nets, place, width }: SignalList, entry: number): Uint32Array =>
+  nets.slice(place[entry]!, place[entry]! + width[entry]!);
