@@ -1,4 +1,12 @@
 /** Clockstride's compiler: netlists in, WebAssembly models and interpreters out. */
+export { activityTable } from './activity/activityTable.js';
+export {
+  type ActivityForm,
+  type ActivityRequest,
+  countActivity,
+} from './activity/countActivity.js';
+export type { NetActivity, NetCounts } from './activity/netActivity.js';
+export { saif } from './activity/saif.js';
 export { type BackgroundCompiler, openCompiler } from './background/compileThread.js';
 export { CacheStore } from './cache/cacheStore.js';
 export { ModelCache } from './cache/modelCache.js';
@@ -35,6 +43,7 @@ export type { BenchResult } from './report/benchResult.js';
 export { type Inspection, inspect, type Problem } from './report/inspection.js';
 export { type Revisited, type RevisitRequest, revisitDesign } from './revisit/revisitDesign.js';
 export { baseClocks } from './run/baseClocks.js';
+export type { ActivitySummary } from './run/outlets/activitySummary.js';
 export { type CompareDesignOptions, compareDesign } from './run/outlets/compareDesign.js';
 export { type CompareFileOptions, compareFile } from './run/outlets/compareFile.js';
 export { compareModel } from './run/outlets/compareModel.js';
@@ -51,12 +60,22 @@ export type {
   WatchedPlace,
 } from './run/outlets/outlet.js';
 export { signResponse } from './run/outlets/signResponse.js';
+export type {
+  StateSummary,
+  StatesSummary,
+  TransitionSummary,
+} from './run/outlets/statesSummary.js';
 export { writeResponse } from './run/outlets/writeResponse.js';
 export { type RunRequest, runDesign } from './run/runDesign.js';
 export type { RunRecorder, RunStart } from './run/runRecorder.js';
 export type { Mismatch, RunSummary } from './run/runSummary.js';
 export { settleDesign } from './settle/settleDesign.js';
 export type { SettleReport } from './settle/settleReport.js';
+export { followStates, type StatesFile } from './states/followStates.js';
+export { statesPicture } from './states/picture/statesPicture.js';
+export { statesGraph } from './states/statesGraph.js';
+export { statesTable } from './states/statesTable.js';
+export { type StateVector, stateVectors } from './states/stateVectors.js';
 export { pictureForm } from './waveform/picture/pictureForm.js';
 export { portSignals, type SignalList, signalsOf } from './waveform/signalList.js';
 export { tableForm } from './waveform/tableForm.js';
