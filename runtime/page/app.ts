@@ -6,6 +6,7 @@ import type { Base } from './valueBase.js';
 import { Diagram } from './views/diagram.js';
 import { files } from './views/files.js';
 import { inputPanel } from './views/inputs.js';
+import { memoryPanel } from './views/memories.js';
 import { netPanel } from './views/nets.js';
 import { outputPanel } from './views/outputs.js';
 import { toolbar } from './views/toolbar.js';
@@ -59,8 +60,9 @@ export class App implements Desk {
     const inputs = inputPanel(this);
     const outputs = outputPanel(this);
     const nets = netPanel(this);
+    const memories = memoryPanel(this);
     const transfer = files(this);
-    this.#views.push(bar, inputs, outputs, this.#diagram, nets, transfer);
+    this.#views.push(bar, inputs, outputs, this.#diagram, nets, memories, transfer);
     const { model, about } = this.session;
     const facts = [
       `${about.gates.toLocaleString('en-US')} gates`,
@@ -81,7 +83,14 @@ export class App implements Desk {
         'main',
         {},
         element('div', { class: 'ports' }, inputs.root, outputs.root),
-        element('div', { class: 'inside' }, this.#diagram.root, nets.root, transfer.root),
+        element(
+          'div',
+          { class: 'inside' },
+          this.#diagram.root,
+          nets.root,
+          memories.root,
+          transfer.root,
+        ),
       ),
       element(
         'footer',

@@ -21,8 +21,7 @@ async function followLink(app: App): Promise<void> {
     const view = await viewIn(location.hash);
     if (view === undefined) return;
     app.session.restore(view.state);
-    const known = new Set(app.session.signals.map(({ name }) => name));
-    app.session.shown = view.shown.filter((name) => known.has(name));
+    app.session.shown = view.shown.filter((name) => app.session.signal(name) !== undefined);
     app.say(`At cycle ${app.session.model.cycle.toLocaleString('en-US')}, as the address says.`);
   } catch (error) {
     const why = error instanceof Error ? error.message : String(error);

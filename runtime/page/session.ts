@@ -4,7 +4,7 @@ import type { Model } from '../model/model.js';
 import type { SavedState } from '../model/savedState.js';
 import { readValue, type Value, writeValue } from '../model/values.js';
 import { Recording, type RowShape } from './recording.js';
-import { type Signal, shownAtFirst, signalsOf } from './signals.js';
+import { type Signal, shownAtFirst, signalsOf, wordNamed } from './signals.js';
 import { rowAt, type Stimulus } from './stimulus.js';
 import { Traces } from './traces.js';
 
@@ -40,6 +40,7 @@ export class Session {
   fault: string | undefined;
   /** Milliseconds that a cycle took of late, with its recording and marks. */
   cycleMs = 0.01;
+  readonly #byName: Map<string, Signal>;
   readonly #inputs: Uint32Array;
   readonly #response: Uint32Array;
   readonly #rows: Uint32Array;
@@ -54,6 +55,7 @@ export class Session {
     const { inputWords, outputWords } = model;
     const shape: RowShape = { inputWords, outputWords, threeValued: this.threeValued };
     this.signals = signalsOf(model);
+    this.#byName = new Map(this.signals.map((signal) => [signal.name, signal]));
     this.recording = new Recording(shape);
     this.traces = new Traces(viewer, this.recording);
     this.#inputs = new Uint32Array(inputWords);
@@ -139,6 +141,15 @@ export class Session {
     this.stimulusStart = this.model.cycle;
     this.fault = undefined;
     this.#applyStimulus();
+  }
+
+  /** The signal of some name, words of memories included; always the same one. */
+  signal(name: string): Signal | undefined {
+    const known = this.#byName.get(name);
+    if (known !== undefined) return known;
+    const word = wordNamed(this.model.memories, name);
+    if (word !== undefined) this.#byName.set(word.name, word);
+    return word;
   }
 
   /** Puts a signal into the diagram or takes it out. */

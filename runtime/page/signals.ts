@@ -1,8 +1,8 @@
 import type { PortLayout } from '../layout.js';
-import type { KeptNet } from '../model/description.js';
+import type { KeptMemory, KeptNet } from '../model/description.js';
 import type { Model } from '../model/model.js';
 
-/** Something with a value in each cycle: a port, a register or a kept net. */
+/** Something with a value in each cycle: a port, a register, a kept net or a word of a memory. */
 export interface Signal {
   readonly name: string;
   readonly width: number;
@@ -38,4 +38,47 @@ export function shownAtFirst(signals: readonly Signal[]): string[] {
   const near = signals.filter((signal) => !isDeep(signal)).slice(0, MOST_AT_FIRST);
   const rest = signals.filter(isDeep).slice(0, Math.max(0, LEAST_AT_FIRST - near.length));
   return [...near, ...rest].map(({ name }) => name);
+}
+
+/** How many words a memory has. */
+export const wordCount = ({ indices }: KeptMemory): number =>
+  indices.reduce((count, { size }) => count * size, 1);
+
+/** The word that stands so many behind the first one of a memory. */
+export function wordAt({ name, width, indices }: KeptMemory, position: number): Signal {
+  let rest = position;
+  let selects = '';
+  for (let i = indices.length - 1; i >= 0; i--) {
+    const { low, size } = indices[i]!;
+    selects = `[${low + (rest % size)}]${selects}`;
+    rest = Math.floor(rest / size);
+  }
+  return { name: `${name}${selects}`, width, kind: 'net', port: undefined };
+}
+
+/** Where the word with some indices stands; undefined where there is none. */
+export function wordPosition(
+  { indices }: KeptMemory,
+  given: readonly number[],
+): number | undefined {
+  if (given.length !== indices.length) return undefined;
+  let position = 0;
+  for (const [i, { low, size }] of indices.entries()) {
+    const place = given[i]! - low;
+    if (!Number.isInteger(place) || place < 0 || place >= size) return undefined;
+    position = position * size + place;
+  }
+  return position;
+}
+
+/** The word of one of some memories that a name such as `m[3]` stands for. */
+export function wordNamed(memories: readonly KeptMemory[], name: string): Signal | undefined {
+  for (const memory of memories) {
+    if (!name.startsWith(`${memory.name}[`)) continue;
+    const [, selects] = /^((?:\[\d+\])+)$/.exec(name.slice(memory.name.length)) ?? [];
+    const given = Array.from(selects?.matchAll(/\d+/g) ?? [], ([digits]) => Number(digits));
+    const position = wordPosition(memory, given);
+    if (position !== undefined) return wordAt(memory, position);
+  }
+  return undefined;
 }

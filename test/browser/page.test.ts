@@ -229,7 +229,17 @@ describe('a model as one page', () => {
     const memories = Buffer.from(contents.buffer).toString('base64');
     await dropped(page, 'other.json', JSON.stringify({ ...state, memories }));
     await page.getByText('other.json: now at cycle 3.').waitFor();
+    await page.getByLabel('first word of words shown').fill('0x3ff0');
+    await page.getByLabel('first word of words shown').press('Enter');
+    const last = `0x${new BigUint64Array(contents.buffer)[16_383]!.toString(16).padStart(16, '0')}`;
+    const panel = page.locator('[aria-labelledby=memories]');
+    await panel.locator('.row', { hasText: '[16383]' }).getByText(last).waitFor();
+    await page.getByLabel('words[16383] in the diagram').check();
     await step(page);
+    await page.locator('.track', { hasText: 'words[16383]' }).getByText(last).waitFor();
+    await page.getByLabel('first word of words shown').fill('16384');
+    await page.getByLabel('first word of words shown').press('Enter');
+    await page.getByRole('status').getByText('words has words 0 to 16383.').waitFor();
     const word = `0x${new BigUint64Array(contents.buffer)[5]!.toString(16).padStart(16, '0')}`;
     await page.locator('[aria-labelledby=outputs]').getByText(word).waitFor();
     await page.getByRole('button', { name: 'Link to this moment' }).click();

@@ -136,8 +136,8 @@ export class Diagram implements View {
 
   /** Lays out the rows anew where other signals are shown. */
   #adopt(): void {
-    const { shown, signals } = this.#desk.session;
-    const wanted = shown.flatMap((name) => signals.find((signal) => signal.name === name) ?? []);
+    const { session } = this.#desk;
+    const wanted = session.shown.flatMap((name) => session.signal(name) ?? []);
     if (wanted.length === this.#signals.length && wanted.every((s, i) => s === this.#signals[i])) {
       return;
     }

@@ -11,7 +11,8 @@ const MOST_SWITCHES = 8;
 const MOST_COUNTED = 32;
 
 interface Control {
-  readonly root: HTMLElement;
+  /** What stands behind the name. */
+  readonly parts: readonly HTMLElement[];
   show(value: Value, isDriven: boolean): void;
 }
 
@@ -26,7 +27,7 @@ export function inputPanel(desk: Desk): View {
       port,
       control,
       update,
-      root: element('div', { class: 'row' }, root, control.root),
+      root: element('div', { class: 'row' }, root, ...control.parts),
     };
   });
   const none = element('p', { class: 'quiet' }, 'There is no input.');
@@ -72,7 +73,7 @@ function bitSwitch(desk: Desk, port: PortLayout, set: (value: Value) => void): C
   const pulsing = button('pulse', pulse, { 'aria-label': `pulse ${port.name} for two cycles` });
   if (reset) root.append(pulsing);
   return {
-    root,
+    parts: [root],
     show: (value, isDriven) => {
       toggle.show(value === 1, isDriven);
       pulsing.disabled = isDriven;
@@ -116,7 +117,7 @@ function bitChoice(port: PortLayout, set: (value: Value) => void): Control {
     ...choices.map(({ label }) => label),
   );
   return {
-    root,
+    parts: [root],
     show: (value, isDriven) => {
       for (const choice of choices) {
         choice.input.checked = choice.value === value;
@@ -178,19 +179,16 @@ function wordControl(desk: Desk, port: PortLayout, set: (value: Value) => void):
     });
     return { bit, ...toggle };
   });
-  const root = element(
+  const control = element(
     'span',
     { class: width > MOST_COUNTED ? 'control wide' : 'control' },
     field,
     // Nobody counts through more than these.
     ...(width <= MOST_COUNTED ? [less, more] : []),
-    ...(bits.length > 0
-      ? [element('span', { class: 'bits' }, ...bits.map(({ root }) => root))]
-      : []),
-    problem,
   );
+  const switches = element('span', { class: 'switches' }, ...bits.map(({ root }) => root));
   return {
-    root,
+    parts: [control, ...(bits.length > 0 ? [switches] : []), problem],
     show: (value, isDriven) => {
       const text = shownValue(value, width, desk.base);
       const isEdited = document.activeElement === field || text === kept;

@@ -1,17 +1,10 @@
 import type { Desk, View } from '../desk.js';
 import { element, setText } from '../dom.js';
 import type { Signal } from '../signals.js';
-import { shownValue } from '../valueBase.js';
-import { shownToggle } from './shownToggle.js';
+import { type Branch, joined, rowOf } from './signalRow.js';
 
 /** More rows than these are not laid out under one heading or found by one search. */
 const MOST_ROWS = 300;
-
-/** Some rows and what is folded open among them. */
-interface Branch {
-  readonly elements: readonly HTMLElement[];
-  update(): void;
-}
 
 interface Folder {
   readonly children: Map<string, Folder>;
@@ -102,24 +95,3 @@ function listOf(desk: Desk, signals: readonly Signal[], path: string): Branch {
   const words = `and ${rest.toLocaleString('en-US')} more: find them by name`;
   return joined(...rows, { elements: [element('p', { class: 'quiet' }, words)], update: () => {} });
 }
-
-function rowOf(desk: Desk, { name, width }: Signal, path: string): Branch {
-  const value = element('span', { class: 'value' });
-  const { root, update } = shownToggle(desk, name, name.slice(path.length));
-  return {
-    elements: [element('div', { class: 'row' }, root, value)],
-    update: () => {
-      const now = desk.session.model.peek(name);
-      setText(value, shownValue(now, width, desk.base));
-      value.classList.toggle('unknown', typeof now === 'string');
-      update();
-    },
-  };
-}
-
-const joined = (...parts: readonly Branch[]): Branch => ({
-  elements: parts.flatMap(({ elements }) => elements),
-  update: () => {
-    for (const part of parts) part.update();
-  },
-});
