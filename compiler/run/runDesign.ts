@@ -55,10 +55,7 @@ export interface RunRequest {
  */
 export async function runDesign(design: Design, request: RunRequest): Promise<RunSummary> {
   const plans = [...(request.outlets ?? []), ...watchBuses(design)];
-  const nets = new WatchedNets(
-    design,
-    plans.map(({ watch }) => watch),
-  );
+  const nets = new WatchedNets(design, plans);
   const start = powerUpState(design.circuit, request.powerUp, request.seed);
   const marks = plans.some((plan) => plan.marks === true);
   const engine = await runEngine(nets.design, { ...request, marks, start });

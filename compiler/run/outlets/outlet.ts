@@ -22,6 +22,9 @@ export interface OutletPlan {
    */
   readonly watch?: ArrayLike<number>;
 
+  /** Up to 32 nets to see likewise, as bits of one word: they cost less where all are waited for. */
+  readonly flags?: ArrayLike<number>;
+
   /** Its engine must notice when a state comes again: `OutletContext.engine` is a `MarkingEngine`. */
   readonly marks?: true;
 
@@ -44,6 +47,9 @@ export interface OutletContext {
 /** Where some watched nets stand in watched rows; bit i is bit `i % 32` of word `i >> 5`. */
 export interface WatchedPlace {
   readonly firstWord: number;
+  /** Where the nets of `OutletPlan.flags` stand: the word, and the place of the first one in it. */
+  readonly flagWord: number;
+  readonly flagBit: number;
   /** Words from one row to the next. */
   readonly stride: number;
   /** Words from a value to what tells that it is x; undefined in two-valued runs. */

@@ -39,7 +39,7 @@ export function stopWhen(conditions: readonly StopCondition[], options: StopOpti
     throw new RangeError(`at most ${MOST_CONDITIONS} conditions, got ${conditions.length}`);
   }
   return {
-    watch: conditions.map(({ net }) => net),
+    flags: conditions.map(({ net }) => net),
     open: ({ watched, saved }) =>
       new StopOutlet(conditions, options, watched, saved as SavedStops | undefined),
   };
@@ -82,11 +82,11 @@ class StopOutlet implements Outlet {
   }
 
   take({ firstCycle, cycles, watched }: OutletBlock): Stop | undefined {
-    const { firstWord, stride } = this.#place;
+    const { flagWord, flagBit, stride } = this.#place;
     const mask = this.#mask;
     let holding = this.#holding;
-    for (let row = 0, at = firstWord; row < cycles; row++, at += stride) {
-      const now = watched[at]! & mask;
+    for (let row = 0, at = flagWord; row < cycles; row++, at += stride) {
+      const now = (watched[at]! >>> flagBit) & mask;
       if (now === holding) continue;
       const begun = now & ~holding;
       holding = now;

@@ -157,6 +157,31 @@ describe('outlets', () => {
       [4095, 4095],
     ]);
   });
+
+  it('see flags as bits of one word, whatever else is watched', async () => {
+    const { netNames } = namesOf();
+    const seen: number[][] = [];
+    const flagging = (count: number): OutletPlan => ({
+      flags: Array.from({ length: count }, (_, bit) => netNames.get(`n[${bit % 12}]`)!),
+      open: ({ watched: { flagWord, flagBit, stride } }) =>
+        new Recorder({
+          take: ({ rows, watched, cycles, firstCycle }) => {
+            const row = Math.min(cycles - 1, 5);
+            const flags = watched[row * stride + flagWord]! >>> flagBit;
+            if (firstCycle === 0) seen.push([rows[row]!, (flags & (2 ** count - 1)) >>> 0]);
+            return undefined;
+          },
+        }),
+    });
+    const watching: OutletPlan = { watch: [netNames.get('n[0]')!], open: () => new Recorder() };
+    await run(flagging(3), watching, flagging(1), flagging(31));
+    const repeated = [0, 12, 24].reduce((sum, place) => sum + 5 * 2 ** place, 0);
+    expect(seen).toEqual([
+      [5, 5],
+      [5, 1],
+      [5, repeated],
+    ]);
+  });
 });
 
 /** Nets by the names of output bits. */
