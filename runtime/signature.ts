@@ -1,12 +1,16 @@
 import type { ModelLayout } from './layout.js';
+import {
+  MOST_WORDS,
+  ROOM,
+  type SignatureExports,
+  SignatureMemory,
+  signatureModule,
+} from './signatureModule.js';
 
 // Polynomial of ECMA-182, annex B, without its leading term: 42F0E1EB A9EA3693.
 const POLYNOMIAL_HIGH = 0x42f0e1eb;
 const POLYNOMIAL_LOW = 0xa9ea3693;
 
-// Entry [k][b] is what byte b becomes when k more zero bytes follow it: high half at an even place,
-// low half after it. The eight bytes of two words are then looked up independently of each other.
-const BYTE_STRIDE = 512;
 const tables = makeTables();
 
 /**
@@ -21,104 +25,104 @@ export class Signature {
   readonly #groups: 1 | 2;
   readonly #groupWords: number;
   readonly #bytes: number;
-  #high = 0;
-  #low = 0;
+  readonly #exports: SignatureExports;
+  readonly #remainder: DataView;
+  readonly #rows: Uint32Array;
 
   constructor({ outputs, threeValued }: Pick<ModelLayout, 'outputs' | 'threeValued'>) {
     this.#groups = threeValued ? 2 : 1;
     this.#groupWords = outputs.words;
     this.#bytes = (outputs.bits + 7) >>> 3;
+    const isWide = this.#bytes > 8 * MOST_WORDS;
+    const step = isWide || this.#isDense ? this.#bytes & 7 : this.#bytes;
+    // So small that it is compiled at once, as browsers allow everywhere.
+    const module = new WebAssembly.Module(signatureModule(step, 4 * this.#groupWords));
+    this.#exports = new WebAssembly.Instance(module).exports as unknown as SignatureExports;
+    const { buffer } = this.#exports.memory;
+    new Uint8Array(buffer).set(tables, SignatureMemory.Tables);
+    this.#remainder = new DataView(buffer, SignatureMemory.Remainder, 8);
+    this.#rows = new Uint32Array(buffer, SignatureMemory.Rows);
   }
 
   /** Adds packed response rows. Throws RangeError where the array is too short. */
   add(rows: Uint32Array, cycles: number): void {
     const words = cycles * this.#groups * this.#groupWords;
     if (rows.length < words) throw new RangeError(`expected ${words} words, got ${rows.length}`);
-    const restBytes = this.#bytes & 3;
-    if (restBytes === 0) {
-      this.#addWords(rows, 0, words);
-      return;
-    }
-    const wholeWords = this.#bytes >>> 2;
-    for (let at = 0; at < words; at += this.#groupWords) {
-      if (wholeWords > 0) this.#addWords(rows, at, at + wholeWords);
-      this.#addBytes(rows[at + wholeWords]!, restBytes);
+    if (words === 0) return;
+    const room = ROOM >>> 2;
+    // What is dense may be cut anywhere between words of eight bytes; other rows may not be cut.
+    const most = this.#isDense ? room & ~1 : Math.floor(room / this.#groupWords) * this.#groupWords;
+    if (most === 0) this.#addHuge(rows, words, room & ~1);
+    for (let at = 0; at < words && most > 0; at += most) {
+      const count = Math.min(most, words - at);
+      this.#rows.set(rows.subarray(at, at + count));
+      this.#addLoaded(4 * count);
     }
   }
 
   /** The signature so far: sixteen hexadecimal digits in lower case. */
   digits(): string {
-    return hex(this.#high) + hex(this.#low);
+    return Array.from(this.save(), hex).join('');
   }
 
   /** The two words from which `restore` goes on. */
   save(): Uint32Array {
-    return Uint32Array.of(this.#high, this.#low);
+    return Uint32Array.of(this.#remainder.getUint32(0), this.#remainder.getUint32(4));
   }
 
   /** Goes on from saved words. Throws RangeError unless there are two. */
   restore(words: Uint32Array): void {
     if (words.length !== 2) throw new RangeError(`expected two words, got ${words.length}`);
-    this.#high = words[0]! | 0;
-    this.#low = words[1]! | 0;
+    this.#remainder.setUint32(0, words[0]!);
+    this.#remainder.setUint32(4, words[1]!);
   }
 
-  #addWords(rows: Uint32Array, start: number, end: number): void {
-    let high = this.#high;
-    let low = this.#low;
-    let i = start;
-    for (; i + 1 < end; i += 2) {
-      const first = rows[i]!;
-      const second = rows[i + 1]!;
-      const a = 7 * BYTE_STRIDE + (((high >>> 24) ^ first) & 255) * 2;
-      const b = 6 * BYTE_STRIDE + (((high >>> 16) ^ (first >>> 8)) & 255) * 2;
-      const c = 5 * BYTE_STRIDE + (((high >>> 8) ^ (first >>> 16)) & 255) * 2;
-      const d = 4 * BYTE_STRIDE + ((high ^ (first >>> 24)) & 255) * 2;
-      const e = 3 * BYTE_STRIDE + (((low >>> 24) ^ second) & 255) * 2;
-      const f = 2 * BYTE_STRIDE + (((low >>> 16) ^ (second >>> 8)) & 255) * 2;
-      const g = BYTE_STRIDE + (((low >>> 8) ^ (second >>> 16)) & 255) * 2;
-      const h = ((low ^ (second >>> 24)) & 255) * 2;
-      high =
-        tables[a]! ^
-        tables[b]! ^
-        tables[c]! ^
-        tables[d]! ^
-        tables[e]! ^
-        tables[f]! ^
-        tables[g]! ^
-        tables[h]!;
-      low =
-        tables[a + 1]! ^
-        tables[b + 1]! ^
-        tables[c + 1]! ^
-        tables[d + 1]! ^
-        tables[e + 1]! ^
-        tables[f + 1]! ^
-        tables[g + 1]! ^
-        tables[h + 1]!;
-    }
-    this.#high = high;
-    this.#low = low;
-    if (i < end) this.#addBytes(rows[i]!, 4);
+  /** Whether no byte of a row is padding. */
+  get #isDense(): boolean {
+    return this.#bytes === 4 * this.#groupWords;
   }
 
-  #addBytes(word: number, count: number): void {
-    let high = this.#high;
-    let low = this.#low;
-    for (let i = 0; i < count; i++) {
-      const entry = (((high >>> 24) ^ (word >>> (8 * i))) & 255) * 2;
-      high = ((high << 8) | (low >>> 24)) ^ tables[entry]!;
-      low = (low << 8) ^ tables[entry + 1]!;
+  #addLoaded(bytes: number): void {
+    const { Rows: start } = SignatureMemory;
+    const { stream, rows } = this.#exports;
+    const stride = 4 * this.#groupWords;
+    if (this.#isDense) {
+      const whole = bytes & ~7;
+      stream(start, start + whole);
+      // The last four bytes of an odd number of words, which one step of `rows` takes.
+      if (whole < bytes) rows(start + whole, start + whole + 1);
+    } else if (this.#bytes > 8 * MOST_WORDS) {
+      for (let at = start; at < start + bytes; at += stride) this.#addWide(at);
+    } else rows(start, start + bytes);
+  }
+
+  #addWide(at: number): void {
+    const whole = at + (this.#bytes & ~7);
+    this.#exports.stream(at, whole);
+    if ((this.#bytes & 7) > 0) this.#exports.rows(whole, whole + 1);
+  }
+
+  /** Rows that do not fit the memory, piece by piece. */
+  #addHuge(rows: Uint32Array, words: number, most: number): void {
+    const { Rows: start } = SignatureMemory;
+    for (let row = 0; row < words; row += this.#groupWords) {
+      for (let at = 0; at < this.#bytes; at += 4 * most) {
+        const from = row + (at >>> 2);
+        this.#rows.set(rows.subarray(from, Math.min(from + most, row + this.#groupWords)));
+        const bytes = Math.min(4 * most, this.#bytes - at);
+        this.#exports.stream(start, start + (bytes & ~7));
+        if ((bytes & 7) > 0) this.#exports.rows(start + (bytes & ~7), start + (bytes & ~7) + 1);
+      }
     }
-    this.#high = high;
-    this.#low = low;
   }
 }
 
-const hex = (half: number): string => (half >>> 0).toString(16).padStart(8, '0');
+const hex = (half: number): string => half.toString(16).padStart(8, '0');
 
-function makeTables(): Int32Array {
-  const made = new Int32Array(8 * BYTE_STRIDE);
+/** The bytes of eight tables: see `SignatureMemory.Tables`. */
+function makeTables(): Uint8Array {
+  const made = new Uint8Array(8 * 2048);
+  const view = new DataView(made.buffer);
   for (let byte = 0; byte < 256; byte++) {
     let high = byte << 24;
     let low = 0;
@@ -131,8 +135,8 @@ function makeTables(): Int32Array {
         high ^= POLYNOMIAL_HIGH;
         low ^= POLYNOMIAL_LOW;
       }
-      made[k * BYTE_STRIDE + byte * 2] = high;
-      made[k * BYTE_STRIDE + byte * 2 + 1] = low;
+      view.setInt32(k * 2048 + byte * 8, high);
+      view.setInt32(k * 2048 + byte * 8 + 4, low);
     }
   }
   return made;
