@@ -27,7 +27,6 @@ const MOST_NETS = 40;
 /** The README of a package, for someone who has never seen a netlist. */
 export function readmeText(facts: ReadmeFacts): string {
   const { layout, npmName, example, printed } = facts;
-  const from = npmName ?? './model.mjs';
   return `# ${layout.name}
 
 A clocked circuit as a JavaScript module: write its inputs, let its clock tick, read its outputs.
@@ -47,8 +46,8 @@ It prints
 \`\`\`
 ${printed}\`\`\`
 
-In a page, \`<script type="module">\` and \`import { load } from '${from}'\` do. In TypeScript the
-ports have their types.
+In a page, \`<script type="module">\` and \`import { load } from './model.mjs'\`, with the way from the
+page to this folder, do${npmName === undefined ? '' : `; with a bundler, and in Node, \`import { load } from '${npmName}'\``}. In TypeScript the ports have their types.
 
 ${portSections(facts)}
 ## What you can do
@@ -57,7 +56,11 @@ ${facts.lanes === 1 ? singleCalls(layout) : laneCalls(layout, facts.lanes)}
 
 The model is always settled: outputs that depend on inputs directly change with \`write\`, registers
 change with \`step\`. What \`read\` shows is what row k of a response would hold in the next cycle.
-Misuse throws \`RangeError\` or \`TypeError\` and says what was expected and what came.
+Misuse throws \`RangeError\` or \`TypeError\` and says what was expected and what came; a cycle that has
+no result, as where a loop of gates never settles, ${facts.lanes === 1 ? 'throws `RunFault`' : 'ends its lane'}.
+
+In typed arrays a port of up to 32 bits has one entry for each cycle, a wider one as many 32-bit
+entries as it takes, the least significant first.${facts.lanes === 1 ? ' `runUntil` returns `{ met, cycles }`.' : ''} \`powerUp\` is ${powerUps(layout, facts.memories)}.
 ${layout.threeValued ? UNKNOWN : ''}
 A saved state fits every package made of the same netlist, of one sequence or of many, and is
 refused by others.
@@ -158,6 +161,13 @@ first contents again, and a saved state has them all.
 }
 
 const cell = (name: string): string => name.replaceAll('|', '\\|').replaceAll('`', "'");
+
+function powerUps({ threeValued }: ModelLayout, memories: readonly KeptMemory[]): string {
+  const usual = threeValued ? "`'unknown'`" : "`'zero'`";
+  if (memories.length > 0) return `${usual}, since there are memories`;
+  const ways = ["`'zero'`", "`'one'`", "`'random'`", ...(threeValued ? [usual] : [])];
+  return `${ways.join(', ')}; ${usual} unless given`;
+}
 
 const sampleInput = ({ inputs }: ModelLayout): string => {
   const port = inputs.ports[0];

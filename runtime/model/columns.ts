@@ -52,7 +52,7 @@ export function fillRows(
       const highest = 2 ** count - 1;
       for (let i = 0; i < cycles; i++) {
         const value = column[(first + i) * words + word]!;
-        if (value > highest) refuse(port, first + i, highest, value);
+        if (value > highest) refuseEntry(port, first + i, highest, value);
         writeBits(rows, i * stride + group, bit, count, value);
       }
     }
@@ -95,6 +95,12 @@ export function clearUnknown(
   }
 }
 
-function refuse({ name }: PortLayout, cycle: number, highest: number, value: number): never {
+/** Throws the RangeError for an entry of a column that is too high. */
+export function refuseEntry(
+  { name }: PortLayout,
+  cycle: number,
+  highest: number,
+  value: number,
+): never {
   throw new RangeError(`${name} takes 0 to ${highest} in cycle ${cycle}, got ${value}`);
 }

@@ -1,16 +1,9 @@
 import type { PortLayout } from '../../layout.js';
 import { checkCycles } from '../block.js';
-import {
-  type Column,
-  checkColumn,
-  clearUnknown,
-  columnWords,
-  fillRows,
-  type PlacedColumn,
-  readRows,
-} from '../columns.js';
+import { type Column, checkColumn, columnWords } from '../columns.js';
 import { checkNames, type Ports } from '../ports.js';
 import { checkFields } from '../values.js';
+import { fillLanes, type LaneColumn, readLanes } from './laneColumns.js';
 import type { LaneCore } from './laneCore.js';
 
 /** Columns by port name: one for all lanes, or a list with one for each. */
@@ -55,10 +48,8 @@ export function runLanes(core: LaneCore, ports: Ports, request: LaneRequest): La
   const watched = checkNames(response).map((name) => ports.output(name));
   const record = newRecord(watched, cycles, lanes);
   const unknown = threeValued ? newRecord(watched, cycles, lanes) : undefined;
-  const placed = Array.from({ length: lanes }, (_, lane) => [
-    ...placedRecord(watched, record, lane, 0),
-    ...placedRecord(watched, unknown, lane, outputs.words),
-  ]);
+  const placed = [...placedRecord(watched, record, 0), ...placedRecord(watched, unknown, 1)];
+  const shape = { row: outputs, lanes, stride: core.out.stride };
   const sampled =
     watched.length > 0
       ? new Uint32Array(Math.min(CALL_CYCLES, cycles) * core.out.stride)
@@ -67,17 +58,12 @@ export function runLanes(core: LaneCore, ports: Ports, request: LaneRequest): La
   for (let done = 0; done < cycles; ) {
     const count = Math.min(CALL_CYCLES, cycles - done);
     stimulus.run(done, count, sampled);
-    if (sampled) {
-      const rows = core.out.unpackAll(sampled, count);
-      rows.forEach((row, lane) => {
-        readRows(row, core.outputStride, placed[lane]!, done, count);
-      });
-    }
+    if (sampled) readLanes(sampled, shape, placed, done, count);
     done += count;
   }
   for (const [lane, tick] of core.ends()) {
     const from = Math.max(0, tick - start);
-    for (const { port, column } of placed[lane]!) column.fill(0, from * columnWords(port));
+    for (const { port, columns } of placed) columns[lane]!.fill(0, from * columnWords(port));
   }
   return { cycles, response: record, ...(unknown && { unknown }) };
 }
@@ -85,73 +71,71 @@ export function runLanes(core: LaneCore, ports: Ports, request: LaneRequest): La
 /** The inputs of a block, piece by piece. */
 class Stimulus {
   readonly #core: LaneCore;
-  /** The columns of each lane; undefined where no input gets new values. */
-  readonly #columns: readonly (readonly PlacedColumn[])[] | undefined;
-  /** Whether all lanes get the same inputs. */
-  readonly #isAlike: boolean;
+  readonly #columns: readonly LaneColumn[];
+  readonly #rows: Uint32Array;
 
   constructor(core: LaneCore, ports: Ports, { cycles, stimulus, unknown }: LaneRequest) {
     this.#core = core;
-    const { inputs } = core.layout;
-    const given = [
+    this.#columns = [
       ...this.#placed(ports, stimulus, cycles, 0),
-      ...this.#placed(ports, unknown, cycles, inputs.words),
+      ...this.#placed(ports, unknown, cycles, 1),
     ];
-    this.#isAlike = core.isAlike && given.every(({ length }) => length === 1);
-    if (given.length === 0) return;
-    this.#columns = Array.from({ length: core.lanes }, (_, lane) =>
-      given.map((columns) => columns[lane % columns.length]!),
-    );
+    const { length } = this.#columns;
+    this.#rows = new Uint32Array(length && Math.min(CALL_CYCLES, cycles) * core.into.stride);
   }
 
   /** Runs `cycles` cycles from cycle `first` of the block on. */
   run(first: number, cycles: number, sampled: Uint32Array | undefined): void {
-    const columns = this.#columns;
-    if (columns === undefined) this.#core.hold(cycles, sampled);
-    else if (this.#isAlike) this.#core.runAlike(cycles, this.#rows(0, first, cycles), sampled);
-    else {
-      const rows = columns.map((_, lane) => this.#rows(lane, first, cycles));
-      this.#core.run(cycles, rows, sampled);
+    if (this.#columns.length === 0) {
+      this.#core.hold(cycles, sampled);
+      return;
     }
+    const { layout, lanes, into } = this.#core;
+    const rows = this.#rows;
+    const shape = { row: layout.inputs, lanes, stride: into.stride };
+    const held = this.#held();
+    for (let i = 0; i < cycles; i++) rows.set(held, i * into.stride);
+    fillLanes(rows, shape, this.#columns, first, cycles);
+    if (layout.threeValued) clearUnknown(rows, into.stride, cycles);
+    this.#core.run(cycles, rows, sampled);
+  }
+
+  // Every row starts as the present inputs; a port with new values has no x unless they say so.
+  #held(): Uint32Array {
+    const { layout, lanes } = this.#core;
+    const held = this.#core.heldRow().slice();
+    if (!layout.threeValued) return held;
+    const parts = lanes >>> 5;
+    for (const { port, group } of this.#columns) {
+      if (group !== 0) continue;
+      const from = (layout.inputs.bits + port.offset) * parts;
+      held.fill(0, from, from + port.width * parts);
+    }
+    return held;
   }
 
   // One column for all lanes, or one for each.
-  #placed(
-    ports: Ports,
-    columns: LaneColumns = {},
-    cycles: number,
-    group: number,
-  ): PlacedColumn[][] {
+  #placed(ports: Ports, columns: LaneColumns = {}, cycles: number, group: 0 | 1): LaneColumn[] {
     const { lanes } = this.#core;
     return Object.entries(checkFields(columns, 'columns by port')).map(([name, given]) => {
       const port = ports.input(name);
-      const each = Array.isArray(given) ? given : [given];
-      if (Array.isArray(given) && given.length !== lanes) {
+      const isEach = Array.isArray(given);
+      if (isEach && given.length !== lanes) {
         throw new RangeError(
           `${name} takes a column, or one for each of ${lanes} lanes, got ${given.length}`,
         );
       }
-      return each.map((column) => ({ port, column: checkColumn(port, column, cycles), group }));
+      const each: readonly unknown[] = isEach ? given : [given];
+      return { port, columns: each.map((column) => checkColumn(port, column, cycles)), group };
     });
   }
+}
 
-  // Packed rows of a lane: its present inputs, and over them what its columns say.
-  #rows(lane: number, first: number, cycles: number): Uint32Array {
-    const { layout, inputStride: stride } = this.#core;
-    const columns = this.#columns![lane]!;
-    const rows = new Uint32Array(cycles * stride);
-    const held = this.#core.inputs(lane).slice();
-    const { words } = layout.inputs;
-    for (const { port, group } of columns) {
-      if (!layout.threeValued || group !== 0) continue;
-      for (let bit = words * 32 + port.offset, i = 0; i < port.width; i++, bit++) {
-        held[bit >>> 5]! &= ~(1 << (bit & 31));
-      }
-    }
-    for (let i = 0; i < cycles; i++) rows.set(held, i * stride);
-    fillRows(rows, stride, columns, first, cycles);
-    if (layout.threeValued) clearUnknown(rows, stride, layout, cycles);
-    return rows;
+/** Bits that are x have value 0: the second half of a lane row tells which are. */
+function clearUnknown(rows: Uint32Array, stride: number, cycles: number): void {
+  const half = stride / 2;
+  for (let at = 0; at < cycles * stride; at += stride) {
+    for (let i = at; i < at + half; i++) rows[i]! &= ~rows[i + half]!;
   }
 }
 
@@ -170,9 +154,6 @@ const newRecord = (
 const placedRecord = (
   ports: readonly PortLayout[],
   record: Readonly<Record<string, readonly Uint32Array[]>> | undefined,
-  lane: number,
-  group: number,
-): PlacedColumn[] =>
-  record === undefined
-    ? []
-    : ports.map((port) => ({ port, column: record[port.name]![lane]!, group }));
+  group: 0 | 1,
+): LaneColumn[] =>
+  record === undefined ? [] : ports.map((port) => ({ port, columns: record[port.name]!, group }));

@@ -23,7 +23,8 @@ export class LaneCore {
   readonly out: LaneRows;
   readonly #engine: LaneEngine;
   readonly #probes: ModelEngine | undefined;
-  readonly #into: LaneRows;
+  /** For lane rows of the inputs. */
+  readonly into: LaneRows;
   /** Packed rows, which are never written to again. */
   #inputs: readonly Uint32Array[];
   #before: readonly (Uint32Array | undefined)[] = [];
@@ -49,7 +50,7 @@ export class LaneCore {
     this.outputStride = rowStride(outputs, threeValued);
     this.#engine = engine;
     this.#probes = probes;
-    this.#into = new LaneRows(inputs, threeValued, description.lanes);
+    this.into = new LaneRows(inputs, threeValued, description.lanes);
     this.out = new LaneRows(outputs, threeValued, description.lanes);
     this.#inputs = this.#each(new Uint32Array(this.inputStride));
   }
@@ -128,39 +129,31 @@ export class LaneCore {
     this.#touch();
   }
 
-  /** Whether all lanes have the same inputs. */
-  get isAlike(): boolean {
-    const [first] = this.#inputs;
-    return this.#inputs.every((row) => row === first || row.every((word, i) => word === first![i]));
-  }
-
   /** Runs cycles with the present inputs. `response` takes lane rows. */
   hold(cycles: number, response?: Uint32Array): void {
-    this.#heldRow ??= this.#into.pack(this.#inputs, 1);
-    this.#engine.run(cycles, this.#heldRow, 0, response);
+    this.#engine.run(cycles, this.heldRow(), 0, response);
     this.#follow(cycles, () => this.#inputs);
   }
 
-  /** Runs cycles with packed rows for each lane, `inputStride` words apart. */
-  run(cycles: number, rows: readonly Uint32Array[], response?: Uint32Array): void {
-    this.#engine.run(cycles, this.#into.pack(rows, cycles), this.#into.stride, response);
-    this.#heldRow = undefined;
-    this.#follow(cycles, () => rows.map((row) => this.#lastOf(row, cycles)));
+  /** Lane row of the present inputs; not to be written to. */
+  heldRow(): Uint32Array {
+    this.#heldRow ??= this.into.pack(this.#inputs, 1);
+    return this.#heldRow;
   }
 
-  /** Runs cycles with the same packed rows in all lanes. */
-  runAlike(cycles: number, rows: Uint32Array, response?: Uint32Array): void {
-    this.#engine.runAlike(cycles, rows, this.inputStride, response);
+  /** Runs cycles with lane rows. */
+  run(cycles: number, rows: Uint32Array, response?: Uint32Array): void {
+    this.#engine.run(cycles, rows, this.into.stride, response);
     this.#heldRow = undefined;
-    this.#follow(cycles, () => this.#each(this.#lastOf(rows, cycles)));
+    const last = rows.subarray((cycles - 1) * this.into.stride);
+    this.#follow(cycles, () => this.into.unpackAll(last, 1));
   }
 
   /** Lane row of what the present inputs and the states settle to. */
   outputRow(): Uint32Array {
     if (this.#outputRow === undefined) {
-      this.#heldRow ??= this.#into.pack(this.#inputs, 1);
       this.#outputRow = new Uint32Array(this.out.stride);
-      const failing = this.#engine.preview(this.#heldRow, this.#outputRow);
+      const failing = this.#engine.preview(this.heldRow(), this.#outputRow);
       this.#failing = new Map(failing.map((fault) => [fault.lane, fault]));
     }
     return this.#outputRow;
@@ -265,10 +258,6 @@ export class LaneCore {
     this.#heldRow = undefined;
     this.#outputRow = undefined;
     this.#outputs = undefined;
-  }
-
-  #lastOf(rows: Uint32Array, cycles: number): Uint32Array {
-    return rows.slice((cycles - 1) * this.inputStride, cycles * this.inputStride);
   }
 
   #each<T>(value: T): T[] {
