@@ -15,6 +15,7 @@ import {
   addWaveOptions,
   addWindowOptions,
   type ChosenWave,
+  shownDesign,
   type WaveOptions,
   wavesWanted,
   windowOf,
@@ -73,9 +74,10 @@ async function revisit(dir: string, options: RevisitOptions): Promise<void> {
   try {
     const { circuit, files: netlists } = await loadCircuit(files, run);
     const powerUp = run.powerUp ?? 'zero';
-    const design = timedDesign(circuit, run, { threeValued: powerUp === 'unknown' });
-    await refuseChanges(record, design, netlists, run);
-    const waves = wavesWanted(design, { ...options, ...here });
+    const whole = timedDesign(circuit, run, { threeValued: powerUp === 'unknown' });
+    await refuseChanges(record, whole, netlists, run);
+    const { design, options: shownOptions } = shownDesign(whole, { ...options, ...here });
+    const waves = wavesWanted(design, shownOptions);
     const start = await nearest(record, window.from - shift);
     const course = await courseOf(design, run, { from: start.cycle });
     const interrupt = new AbortController();

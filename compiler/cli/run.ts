@@ -44,6 +44,7 @@ import { addStopOptions, type StopOptions, stopsOf } from './run/stopOptions.js'
 import {
   addWaveOptions,
   addWindowOptions,
+  shownDesign,
   type WaveOptions,
   waveOutlets,
 } from './run/waveOptions.js';
@@ -133,20 +134,21 @@ Examples:
 /** Runs what a command line says. `resumed` opens the record of a run that is gone on with. */
 export async function run(
   files: string[],
-  options: RunOptions,
+  request: RunOptions,
   resumed?: (design: Design, netlists: readonly ReadFile[]) => Promise<RecordSession>,
 ): Promise<void> {
-  refuseSharing(options);
-  const powerUp = options.powerUp ?? 'zero';
-  const emitter = options.engine === 'wasm' ? openCompiler() : undefined;
-  const cache = userCache(options);
-  const loaded = await loadCircuit(files, options, {
+  refuseSharing(request);
+  const powerUp = request.powerUp ?? 'zero';
+  const emitter = request.engine === 'wasm' ? openCompiler() : undefined;
+  const cache = userCache(request);
+  const loaded = await loadCircuit(files, request, {
     cache: cache?.netlists,
     // The compiler takes a while to get ready: it does so while the netlist is read.
     onReading: () => emitter && isBackground(emitter) && emitter.prepare(),
   });
   const { circuit, found, files: netlists, id } = loaded;
-  const design = timedDesign(circuit, options, { threeValued: powerUp === 'unknown' });
+  const whole = timedDesign(circuit, request, { threeValued: powerUp === 'unknown' });
+  const { design, options, key } = shownDesign(whole, request);
   // Standard output has one use: what is said goes elsewhere where the response takes it.
   const talk = options.response === STANDARD ? process.stderr : process.stdout;
   const tell = (text: string) => talk.write(options.json ? '' : `${text}\n`);
@@ -191,7 +193,7 @@ export async function run(
       if (options.powerUp === undefined) warnOfStart(design);
     },
     ...(emitter && { emitter }),
-    ...(cache && id !== undefined && { models: new ModelCache(cache.store, id + stops.key) }),
+    ...(cache && id !== undefined && { models: new ModelCache(cache.store, id + key + stops.key) }),
   })
     .catch((error) => failed(error, session, options.response))
     // What it still compiles is not worth waiting for.

@@ -54,7 +54,7 @@ export class CircuitScope implements Scope {
       if (found !== undefined) return found;
     }
     const name = texts.join('.');
-    return this.#signal(scope, name) ?? this.#held(scope, name);
+    return this.#held(scope, name) ?? this.#signal(scope, name);
   }
 
   #child(parent: number, name: string): number {

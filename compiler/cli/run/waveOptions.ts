@@ -2,6 +2,7 @@ import { type Command, InvalidArgumentError, Option } from 'commander';
 import type { Circuit } from '../../circuit/circuit.js';
 import type { Design } from '../../compile.js';
 import type { OutletPlan } from '../../run/outlets/outlet.js';
+import { withMemoryWords } from '../../waveform/memoryWords.js';
 import { MOST_SHOWN, pictureForm } from '../../waveform/picture/pictureForm.js';
 import {
   portSignals,
@@ -40,8 +41,8 @@ export function addWaveOptions(command: Command): Command {
     .option(
       '--nets <pattern...>',
       'the signals to show, by hierarchical name: * stands for anything within a level, ' +
-        '** for any levels, and [7:4] at the end for a part; in a picture the ports unless ' +
-        'given, else all',
+        '** for any levels, and [7:4] at the end for a part, or [5] for a word of a memory; in a ' +
+        'picture the ports unless given, else all',
     );
 }
 
@@ -108,10 +109,39 @@ export function waveOutlets(design: Design, options: WaveOptions & ActivityFiles
   );
 }
 
+/** What --nets shows of a design; see `withMemoryWords`. */
+export interface ShownDesign<Options extends WaveOptions> {
+  readonly design: Design;
+  /** With patterns for that design. */
+  readonly options: Options;
+  /** Tells its circuit from others of the same netlist. */
+  readonly key: string;
+}
+
+/** A design of which the words of memories that --nets names are signals. Throws UsageError. */
+export function shownDesign<Options extends WaveOptions>(
+  design: Design,
+  options: Options,
+): ShownDesign<Options> {
+  const { nets = [] } = options;
+  const { circuit, layout } = design;
+  const shown = orUsage(() => withMemoryWords(circuit, nets, layout.threeValued));
+  if (shown.circuit === circuit) return { design, options, key: '' };
+  return {
+    design: { ...design, circuit: shown.circuit },
+    options: { ...options, nets: shown.patterns },
+    key: JSON.stringify(nets),
+  };
+}
+
 /** The signals of --nets, all without it. Throws UsageError for patterns that choose nothing. */
 export function chosenSignals(circuit: Circuit, nets: readonly string[]): SignalList {
+  return orUsage(() => signalsOf(circuit, nets));
+}
+
+function orUsage<T>(choose: () => T): T {
   try {
-    return signalsOf(circuit, nets);
+    return choose();
   } catch (error) {
     if (error instanceof UnmatchedPattern) throw new UsageError(`error: --nets ${error.message}`);
     throw error;
