@@ -246,6 +246,11 @@ describe('inspect finds', () => {
     });
   });
 
+  it('no gates that the reader itself has left over', () => {
+    const text = netlist('input a, en, output y', 'bufif0 (y, a, en);', 'pullup (y);');
+    expect(inspectNetlist(text).problems).toEqual([]);
+  });
+
   it('a dead loop, which has no end', () => {
     const text = netlist('input a, output y', 'wire p;', 'buf (y, a);', 'or (p, a, p);');
     expect(problemOf(text, 'logic-unused').message).toBe(

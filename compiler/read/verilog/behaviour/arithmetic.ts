@@ -90,9 +90,8 @@ export function divideByPower(
   // A negative dividend is rounded up, toward zero, by adding 2^exponent - 1 before the cut.
   const bias = a.map((_, i) => (i < exponent ? sign : logic.zero));
   const rounded = add(a, bias, logic.zero, logic);
-  const quotient = resize(rounded.slice(exponent), a.length, false, logic).map((net, i) =>
-    i < a.length - exponent ? net : sign,
-  );
+  // The sign after rounding: -1 / 4 is 0.
+  const quotient = resize(rounded.slice(exponent), a.length, signed, logic);
   const product = quotient.map((_, i) => (i < exponent ? logic.zero : quotient[i - exponent]!));
   const remainder = signed
     ? subtract(a, product, logic)

@@ -5,7 +5,7 @@ import { lowerCondition } from './expressions.js';
 import { foldSelf } from './foldConstant.js';
 import { LoopCircle } from './loopCircle.js';
 import { isPowerUp } from './powerUp.js';
-import { type Placed, report } from './report.js';
+import { errorsMet, type Placed, report } from './report.js';
 import { countOf } from './widths.js';
 
 /** How often the body of one loop is executed at most: where it makes gates, and at power-up. */
@@ -27,9 +27,13 @@ export function executeFor(
   const { initial, condition, step, body } = statement;
   assign(initial, context, true);
   const circle = new LoopCircle(statement, context);
+  const { shared } = context.scope;
   return unroll(condition, body, context, () => {
     circle.endTurn();
+    const before = errorsMet(shared);
     assign(step, context, true);
+    // What cannot be worked out will not end the loop either.
+    if (errorsMet(shared) > before) context.store.aborted = true;
     circle.startTurn();
   });
 }

@@ -7,7 +7,8 @@ import type { ProblemContext } from './context.js';
 /** Gates, and state elements, that make no difference to any output. */
 export function findUnused({ design: { circuit }, words, diagnostics }: ProblemContext): void {
   const { gates, state, memories } = unusedParts(circuit);
-  if (gates.length > 0) {
+  // Gates that no text names are left over where one was made of several.
+  if (gates.some((net) => words.hasName(net))) {
     const reads = readCounts(circuit);
     const ends = gates.filter((net) => reads[net] === 0);
     const shown = ends.length > 0 ? ends : gates;

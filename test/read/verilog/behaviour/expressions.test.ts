@@ -97,6 +97,24 @@ describe('expressions', () => {
     }
   });
 
+  it('divide every signed value by every constant toward zero (5.1.5)', () => {
+    const divisors = [...Array(16).keys()].map((i) => i - 8).filter((divisor) => divisor !== 0);
+    const outputs = divisors.map((divisor, i) => {
+      const constant = `${divisor < 0 ? '-' : ''}5'sd${Math.abs(divisor)}`;
+      return `wire signed [6:0] q${i}, r${i}; assign q${i} = a / ${constant}, r${i} = a % ${constant};`;
+    });
+    const simulation = bench(`input signed [4:0] a; ${outputs.join('\n')}`).simulate();
+    for (let a = -16; a < 16; a++) {
+      simulation.set({ a: a & 31 });
+      for (const [i, divisor] of divisors.entries()) {
+        const both = [simulation.number(`q${i}`), simulation.number(`r${i}`)];
+        expect([a, divisor, ...both]).toEqual([
+          ...[a, divisor, Math.trunc(a / divisor) & 127, (a % divisor) & 127],
+        ]);
+      }
+    }
+  });
+
   it('give x for a division by a signal that is zero (5.1.5)', () => {
     const items = 'input [3:0] a, b; wire [3:0] y;';
     expect(yOf(`${items} assign y = a / b;`, { a: 9, b: 0 })).toBe('xxxx');
