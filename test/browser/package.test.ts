@@ -22,6 +22,7 @@ interface PackageRun {
 declare const signatureInPage: (run: PackageRun) => Promise<string>;
 declare const signatureInOwnWorker: (run: PackageRun) => Promise<string>;
 declare const compareWorker: (name: string, cycles: number) => Promise<Record<string, unknown>>;
+declare const compareLanes: (lanes: string, name: string) => Promise<Record<string, unknown>>;
 declare const loadRounds: (name: string, rounds: number) => Promise<number>;
 declare const liveInstances: number;
 declare const results: () => Promise<{ there: unknown; here: unknown }>;
@@ -48,12 +49,16 @@ beforeAll(async () => {
   await packInto(folder('aes'), aes);
   await packInto(folder('lock'), lock, { keepNames: 'all' });
   await packInto(folder('lock3'), lock3);
+  await packInto(folder('lanes'), lock, { lanes: 32 });
   await buildWithVite(folder('lock'), folder('vite'));
   await buildWithEsbuild(folder('lock'), folder('esbuild'));
   proxy = await fence();
   closing.push(proxy.close);
   const own = (path: string): string => fileURLToPath(new URL(path, import.meta.url));
-  const packed = ['aes', 'lock', 'lock3', 'vite', 'esbuild'].map((name) => [name, folder(name)]);
+  const packed = ['aes', 'lock', 'lock3', 'lanes', 'vite', 'esbuild'].map((name) => [
+    name,
+    folder(name),
+  ]);
   site = await serveFolders({
     ...Object.fromEntries(packed),
     page: own('package'),
@@ -93,6 +98,13 @@ describe('a package under a strict policy', () => {
     expect(found).toMatchObject({ isSame: true, ended: 'AbortError' });
     expect(found.ones).toBeGreaterThan(10);
     expect(found.passed).toBeGreaterThan(0);
+  });
+
+  it('runs many lanes, each as a model of one sequence', async () => {
+    const { lanes, expected, actual } = await page.evaluate(() => compareLanes('lanes', 'lock'));
+    expect(lanes).toBe(32);
+    expect(actual).toEqual(expected);
+    expect(new Set(actual as string[]).size).toBeGreaterThan(1);
   });
 
   it('lets go of a thousand models that were disposed of', async () => {

@@ -44,6 +44,29 @@ globalThis.compareWorker = async (name, cycles) => {
   };
 };
 
+// Some lanes of a package and a model of one sequence for each of them, by way of saved states.
+globalThis.compareLanes = async (lanesName, name) => {
+  const lanes = await (await import(`/${lanesName}/model.mjs`)).load(undefined, { verify: true });
+  const { compile, load } = await import(`/${name}/model.mjs`);
+  const module = await compile();
+  const compared = [0, 9, 31];
+  const givenTo = (lane) => ({ call_below: lane % 2, call_above: lane % 3, level_low: 1 });
+  const [expected, actual] = [[], []];
+  lanes.write({ reset: 1 }).step(2).write({ reset: 0, doorway_clear: 1 });
+  for (const lane of compared) lanes.write(givenTo(lane), lane);
+  lanes.step(500);
+  for (const lane of compared) {
+    const model = await load(module);
+    model
+      .write({ reset: 1 })
+      .step(2)
+      .write({ reset: 0, doorway_clear: 1, ...givenTo(lane) });
+    expected.push(JSON.stringify(model.step(500).save()));
+    actual.push(JSON.stringify(lanes.save(lane)));
+  }
+  return { lanes: lanes.lanes, expected, actual };
+};
+
 // Loads and disposes of models, keeps what is left of them, and counts instances not let go.
 globalThis.loadRounds = async (name, rounds) => {
   globalThis.liveInstances = 0;
