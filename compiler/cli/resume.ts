@@ -29,7 +29,8 @@ const HELP = `
 The run comes to the same end as if it had not been stopped: signature, departures and
 response. The netlists and tables must be as they were. A response file is cut to where
 the checkpoint was made and gone on with; where what was written of it is gone, the run
-goes back as far as it must.
+goes back as far as it must. A run that a condition has stopped goes on to the next time
+it is met, with --stop-after counted anew.
 
 Exit status: 0 done and as expected, 1 done and a departure found, stopped by a condition
 or interrupted again, 2 the record or an input is not as it was, or a cycle has no result.
@@ -42,9 +43,15 @@ Examples:
 
 async function resume(dir: string, { json }: { readonly json?: true }): Promise<void> {
   const { record, files, options } = await recordedRun(dir);
-  const wanted: RunOptions = json ? { ...options, json } : options;
   const result = await record.result().catch((error) => refuse(error, dir));
-  if (result !== undefined) {
+  const { cycle: past, condition } = result?.stopped ?? {};
+  const goesPast = condition !== undefined && past !== undefined;
+  const wanted: RunOptions = {
+    ...options,
+    ...(json && { json }),
+    ...(goesPast && { stopPast: past }),
+  };
+  if (result !== undefined && !goesPast) {
     const over = `the run was over already; \`clockstride revisit ${dir}\` shows its cycles`;
     const summary = { ...result, notes: [...result.notes, over] };
     const text = wanted.json
@@ -58,7 +65,9 @@ async function resume(dir: string, { json }: { readonly json?: true }): Promise<
   await run(files, wanted, async (design, netlists): Promise<RecordSession> => {
     await refuseChanges(record, design, netlists, wanted);
     const from = await newestWhole(record, wanted);
-    process.stderr.write(`${dir}: goes on at cycle ${count(from?.cycle ?? 0)}\n`);
+    const stop = goesPast ? `, past its stop at cycle ${count(past)}` : '';
+    process.stderr.write(`${dir}: goes on at cycle ${count(from?.cycle ?? 0)}${stop}\n`);
+    if (goesPast) await record.reopen();
     return session(record, from, unlock);
   }).finally(unlock);
 }

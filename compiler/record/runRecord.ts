@@ -129,6 +129,11 @@ export class RunRecord {
     await this.#files.write(RESULT, sealed({ record: this.id, ...summary }));
   }
 
+  /** Forgets what the run came to: it goes on. */
+  async reopen(): Promise<void> {
+    await this.#files.remove(RESULT);
+  }
+
   /** What the run came to; undefined while it is not over. Throws `DamagedFile`. */
   async result(): Promise<RunSummary | undefined> {
     if (!(await this.#files.names()).includes(RESULT)) return undefined;

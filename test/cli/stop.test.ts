@@ -116,4 +116,25 @@ describe('a recorded run with --stop-when', () => {
     expect(status).toBe(1);
     expect(summaryOf(stdout).notes.join()).toContain('clockstride revisit kept --from');
   });
+
+  it('goes on past a stop to the next one', async () => {
+    const stops = statesOf((state) => (state & 7) === 7, 511).filter(
+      (cycle, i, all) => all[i - 1] !== cycle - 1,
+    );
+    const args = ['prbs.v', '--stop-when', '&state[2:0]', '--stop-after', '3', '--cycles', '300'];
+    const first = await folder.run('run', ...args, '--record', 'steps', '--json', '--signature');
+    const second = await folder.run('resume', 'steps', '--json');
+    expect(second.stderr).toContain(`past its stop at cycle ${stops[2]}`);
+    const cycles = [first, second].map(({ stdout }) => summaryOf(stdout).stopped?.cycle);
+    expect(cycles).toEqual([stops[2], stops[5]]);
+    const whole = await folder.run(
+      'run',
+      ...args.slice(0, 1),
+      '--signature',
+      '--json',
+      '--cycles',
+      `${stops[5]! + 1}`,
+    );
+    expect(summaryOf(second.stdout).signature).toBe(summaryOf(whole.stdout).signature);
+  });
 });

@@ -10,6 +10,8 @@ import { UsageError } from '../usageError.js';
 export interface StopOptions {
   readonly stopWhen?: readonly string[];
   readonly stopAfter?: number;
+  /** A cycle in which the run has stopped before it is gone on with. */
+  readonly stopPast?: number;
 }
 
 /** Adds the options for conditions that end a run. */
@@ -43,7 +45,7 @@ export interface Stops {
  * InputError for what is wrong with an expression, and UsageError.
  */
 export function stopsOf(design: Design, options: StopOptions, record?: string): Stops {
-  const { stopWhen: texts = [], stopAfter: after = 1 } = options;
+  const { stopWhen: texts = [], stopAfter: after = 1, stopPast: past } = options;
   if (texts.length === 0) {
     if (options.stopAfter === undefined) return { design, outlets: [], key: '' };
     throw new UsageError('error: --stop-after is for --stop-when EXPRESSION, which is missing');
@@ -59,7 +61,7 @@ export function stopsOf(design: Design, options: StopOptions, record?: string): 
   const lookAround = (cycle: number): string => lookingAround(cycle, record);
   return {
     design: { ...design, circuit },
-    outlets: [stopWhen(conditions, { after, lookAround })],
+    outlets: [stopWhen(conditions, { after, lookAround, ...(past !== undefined && { past }) })],
     key: JSON.stringify(texts),
   };
 }

@@ -23,6 +23,8 @@ export interface StopCondition {
 export interface StopOptions {
   /** The occurrence of a condition that ends the run, from 1 on. */
   readonly after: number;
+  /** A cycle up to which occurrences are passed over and not counted. */
+  readonly past?: number;
   /** How to look at what is around a cycle. */
   readonly lookAround?: (cycle: number) => string;
 }
@@ -51,6 +53,8 @@ interface SavedStops {
   readonly holding: number;
   /** How often each has occurred. */
   readonly counts: readonly number[];
+  /** See `StopOptions`. */
+  readonly past?: number;
 }
 
 class StopOutlet implements Outlet {
@@ -60,6 +64,7 @@ class StopOutlet implements Outlet {
   readonly #place: WatchedPlace;
   readonly #mask: number;
   readonly #counts: number[];
+  readonly #past: number;
   #holding: number;
 
   constructor(
@@ -73,12 +78,15 @@ class StopOutlet implements Outlet {
     this.#place = place;
     // What pads the word is none of the conditions.
     this.#mask = conditions.length === 32 ? -1 : (1 << conditions.length) - 1;
-    this.#counts = [...(saved?.counts ?? conditions.map(() => 0))];
+    const none = conditions.map(() => 0);
+    // What was counted before a stop is over.
+    this.#counts = options.past === undefined ? [...(saved?.counts ?? none)] : none;
+    this.#past = options.past ?? saved?.past ?? -1;
     this.#holding = saved?.holding ?? 0;
   }
 
   save(): SavedStops {
-    return { holding: this.#holding, counts: [...this.#counts] };
+    return { holding: this.#holding, counts: [...this.#counts], past: this.#past };
   }
 
   take({ firstCycle, cycles, watched }: OutletBlock): Stop | undefined {
@@ -90,7 +98,7 @@ class StopOutlet implements Outlet {
       if (now === holding) continue;
       const begun = now & ~holding;
       holding = now;
-      if (begun === 0) continue;
+      if (begun === 0 || firstCycle + row <= this.#past) continue;
       const met = this.#count(begun);
       if (met < 0) continue;
       this.#holding = holding;
