@@ -1,15 +1,13 @@
+import { gateInfo } from '../circuit/gates.js';
 import { scopePath } from '../circuit/hierarchy.js';
 import type { Design } from '../compile.js';
 import { type SignalList, signalName } from '../waveform/signalList.js';
 import type { ValueGroup } from './activityCourse.js';
 import type { ObservedNets } from './observedNets.js';
-import { type OwnedNets, ownedNets } from './ownedNets.js';
-
-/** Blocks in a picture; deeper levels of the hierarchy are joined until there are no more. */
-const MOST_BLOCKS = 40;
+import { blocksOf, type OwnedNets, ownedNets } from './ownedNets.js';
 
 /** Signals that are told apart where a circuit has one block alone. */
-const MOST_SIGNALS = 2000;
+const MOST_SIGNALS = 4000;
 
 /** Nets that are shown together. */
 export interface ActivityGroup extends ValueGroup {
@@ -19,7 +17,7 @@ export interface ActivityGroup extends ValueGroup {
 
 /**
  * The nets of a list in groups: by instance, as deep as there is room for; by signal where there is
- * one instance alone.
+ * one instance alone, or by input and state element where its signals are too many.
  */
 export function activityGroups(
   { circuit }: Design,
@@ -28,17 +26,21 @@ export function activityGroups(
 ): ActivityGroup[] {
   const { hierarchy } = circuit;
   const nets = ownedNets(list, (place) => observed.clockOf[place]! >= 0);
-  const scopes = Uint32Array.from(nets.entry, (entry) => list.scope[entry]!);
-  const blocks = blocksOf(hierarchy.scopeParent, scopes);
+  const blocks = blocksOf(hierarchy, list, nets);
   const names = new Set(blocks);
   if (names.size > 1) {
     const name = (scope: number) => scopePath(hierarchy, scope) || circuit.name;
     return grouped(nets, observed, (i) => blocks[i]!, name);
   }
+  const name = (entry: number) =>
+    entry === OTHERS ? 'all other nets' : signalName(hierarchy, list, entry);
   if (new Set(nets.entry).size <= MOST_SIGNALS) {
-    const name = (entry: number) => signalName(hierarchy, list, entry);
     return grouped(nets, observed, (i) => nets.entry[i]!, name);
   }
+  const isSource = (i: number) =>
+    gateInfo(circuit.kind[list.nets[nets.place[i]!]!]!).role === 'source';
+  const keys = Array.from(nets.entry, (entry, i) => (isSource(i) ? entry : OTHERS));
+  if (new Set(keys).size <= MOST_SIGNALS) return grouped(nets, observed, (i) => keys[i]!, name);
   return grouped(
     nets,
     observed,
@@ -47,19 +49,8 @@ export function activityGroups(
   );
 }
 
-// Of each scope the ancestor at the greatest depth at which there are few enough.
-function blocksOf(parent: Uint32Array, scopes: Uint32Array): Uint32Array {
-  const depth = new Uint32Array(parent.length);
-  for (let scope = 1; scope < parent.length; scope++) depth[scope] = depth[parent[scope]!]! + 1;
-  const deepest = scopes.reduce((most, scope) => Math.max(most, depth[scope]!), 0);
-  const joined = scopes.slice();
-  for (let level = deepest; new Set(joined).size > MOST_BLOCKS; level--) {
-    for (let i = 0; i < joined.length; i++) {
-      if (depth[joined[i]!]! >= level) joined[i] = parent[joined[i]!]!;
-    }
-  }
-  return joined;
-}
+/** Stands for the entries that are not told apart. */
+const OTHERS = -1;
 
 function grouped(
   nets: OwnedNets,

@@ -48,3 +48,27 @@ export function ownedName(
   const index = signal.isVector ? `[${declaredIndex(signal, bit)}]` : '';
   return signalPath(hierarchy, list, at) + index;
 }
+
+/** Blocks that are told apart at most. */
+const MOST_BLOCKS = 40;
+
+/**
+ * For each of these nets the instance that it belongs to, a scope. Where there are too many, the
+ * deepest ones are joined with those around them, the cells of a netlist before all.
+ */
+export function blocksOf(
+  { scopeParent }: Hierarchy,
+  list: SignalList,
+  { entry }: OwnedNets,
+): Uint32Array {
+  const depth = new Uint32Array(scopeParent.length);
+  for (let scope = 1; scope < depth.length; scope++) depth[scope] = depth[scopeParent[scope]!]! + 1;
+  const blocks = Uint32Array.from(entry, (at) => list.scope[at]!);
+  const deepest = blocks.reduce((most, scope) => Math.max(most, depth[scope]!), 0);
+  for (let level = deepest; new Set(blocks).size > MOST_BLOCKS; level--) {
+    for (let i = 0; i < blocks.length; i++) {
+      if (depth[blocks[i]!]! >= level) blocks[i] = scopeParent[blocks[i]!]!;
+    }
+  }
+  return blocks;
+}

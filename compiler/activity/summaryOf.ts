@@ -1,7 +1,7 @@
 import { scopePath } from '../circuit/hierarchy.js';
 import type { ActivitySummary } from '../run/outlets/activitySummary.js';
 import type { NetActivity } from './netActivity.js';
-import { ownedName, ownedNets } from './ownedNets.js';
+import { blocksOf, ownedName, ownedNets } from './ownedNets.js';
 
 /** Nets and blocks named in a summary. */
 const SHOWN = 6;
@@ -18,9 +18,10 @@ export function summaryOf(activity: NetActivity): ActivitySummary {
     .filter((i) => toggles[i]! > 0)
     .sort((p, q) => toggles[q]! - toggles[p]! || p - q)
     .slice(0, SHOWN);
+  const scopes = blocksOf(circuit.hierarchy, list, nets);
   const blocks = new Map<number, { nets: number; toggles: number }>();
   for (let i = 0; i < nets.count; i++) {
-    const scope = list.scope[nets.entry[i]!]!;
+    const scope = scopes[i]!;
     const block = blocks.get(scope) ?? { nets: 0, toggles: 0 };
     block.nets++;
     block.toggles += toggles[i]!;

@@ -1,5 +1,10 @@
 import type { Circuit } from '../circuit/circuit.js';
-import { type SignalList, signalName, signalsOf } from '../waveform/signalList.js';
+import {
+  type SignalList,
+  signalName,
+  signalsOf,
+  UnmatchedPattern,
+} from '../waveform/signalList.js';
 
 /** Bits that make up a state together. */
 export interface StateVector {
@@ -18,7 +23,9 @@ export function stateVectors(circuit: Circuit, texts: readonly string[]): StateV
   const found = texts.flatMap((text): StateVector[] => {
     const [, inside] = /^\s*\{(.*)\}\s*$/s.exec(text) ?? [];
     if (inside === undefined) return eachOf(circuit, text);
-    const parts = inside.split(',').flatMap((part) => eachOf(circuit, part.trim()));
+    const patterns = inside.split(',').map((part) => part.trim());
+    if (patterns.includes('')) throw new UnmatchedPattern(`${text}: a name is missing`);
+    const parts = patterns.flatMap((pattern) => eachOf(circuit, pattern));
     const nets = parts.toReversed().flatMap((part) => Array.from(part.nets));
     const name = `{${parts.map((part) => part.name).join(', ')}}`;
     return [{ name, nets: Uint32Array.from(nets) }];

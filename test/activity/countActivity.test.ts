@@ -11,6 +11,7 @@ import { type CompileOptions, type Design, designOf } from '../../compiler/compi
 import { Source } from '../../compiler/diagnostics/source.js';
 import { localEmitter } from '../../compiler/emit/emitter.js';
 import type { EngineName } from '../../compiler/engines.js';
+import type { OutletPlan } from '../../compiler/run/outlets/outlet.js';
 import { type RunRequest, runDesign } from '../../compiler/run/runDesign.js';
 import type { RunRecorder, RunStart } from '../../compiler/run/runRecorder.js';
 import { signalsOf } from '../../compiler/waveform/signalList.js';
@@ -138,6 +139,67 @@ describe('a counter of three bits', () => {
       if (cycles === 300) expect(text).toContain('>0.58<');
     }
   });
+});
+
+describe('blocks', () => {
+  const design = designFrom(
+    new Source(
+      'two.v',
+      `module half (input clk, output reg q = 0, output was);
+        reg before = 0;
+        always @(posedge clk) begin q <= ~q; before <= q; end
+        assign was = before;
+      endmodule
+      module pair (input clk, output [1:0] q, was);
+        half a (clk, q[0], was[0]);
+        half b (clk, q[1], was[1]);
+      endmodule`,
+    ),
+  );
+
+  /*
+   * By hand: in ten cycles q changes nine times, and what it was a cycle before eight times. The top
+   * names both bits of both ports; `before` has a name in each half alone.
+   */
+  it('have the nets that nothing nearer to the top names', async () => {
+    const { summary, text } = await counted(design, { ...held(design, 10), form: 'picture' });
+    expect(summary.nets).toBe(6);
+    expect(summary.busiestBlocks).toEqual([
+      { name: 'pair', nets: 4, toggles: 9 + 9 + 8 + 8 },
+      { name: 'a', nets: 1, toggles: 8 },
+      { name: 'b', nets: 1, toggles: 8 },
+    ]);
+    for (const name of ['pair', 'a', 'b']) expect(text).toContain(`>${name}<`);
+    const chosen = await counted(design, {
+      ...{ ...held(design, 10), form: 'picture', nets: ['a.*', 'b.before', 'q'] },
+    });
+    expect(chosen.summary.busiestBlocks).toEqual([
+      { name: 'pair', nets: 2, toggles: 18 },
+      { name: 'a', nets: 2, toggles: 16 },
+      { name: 'b', nets: 1, toggles: 8 },
+    ]);
+    const top = await counted(design, { ...held(design, 10), form: 'picture', nets: ['q', 'was'] });
+    expect(top.text).toContain('>was<');
+  });
+
+  it('are counted up to the cycle in which a run ends', async () => {
+    const list = signalsOf(design.circuit, []);
+    const { activity } = await runDesign(design, {
+      ...held(design, 1000),
+      outlets: [stopAt(300), countActivity(design, { list, window: whole, emitter })],
+    });
+    expect(activity!.cycles).toBe(301);
+  });
+});
+
+/** Ends a run after a cycle of its first block. */
+const stopAt = (lastCycle: number): OutletPlan => ({
+  open: () => ({
+    wantsResponse: true,
+    take: () => ({ lastCycle, reason: 'enough' }),
+    finish: () => ({}),
+    discard: () => undefined,
+  }),
 });
 
 /** Where a run with counting stands after some cycles. */

@@ -101,11 +101,12 @@ function caption(
 }
 
 function description(shown: ActivityCourseShown, rows: readonly Row[]): string {
-  const busiest = rows.reduce((most, row) => (row.rate > most.rate ? row : most), rows[0]!);
+  const [busiest] = rows.toSorted((p, q) => q.rate - p.rate);
+  const most =
+    busiest && ` The most active one is ${busiest.group.name}: ${rateText(busiest.rate)}.`;
   return (
     `Toggles for each net and cycle of ${rows.length} groups of nets, ` +
-    `${caption(shown, rows.length, shown.groups.length)}. The most active one is ` +
-    `${busiest.group.name} with ${rateText(busiest.rate)}.`
+    `${caption(shown, rows.length, shown.groups.length)}.${most ?? ''}`
   );
 }
 

@@ -6,7 +6,7 @@ text { fill: #2c3138; font: 13px system-ui, sans-serif }
 .title { font-size: 18px; font-weight: 600 }
 .quiet { fill: #5d646d; font-size: 12px }
 .bed { fill: #f2f0e9 }
-.heat { fill: #3f7d83 }
+.heat { fill: #3f7d83; shape-rendering: crispEdges }
 .axis { stroke: #868d96; stroke-width: 1 }
 @media (prefers-color-scheme: dark) {
 svg { background: #17191d }

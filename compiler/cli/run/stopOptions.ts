@@ -86,6 +86,7 @@ function lookingAround(cycle: number, record: string | undefined): string {
 const VALUED: ReadonlySet<string> = new Set([
   ...['--stop-when', '--stop-after', '--cycles', '--response', '--response-form'],
   ...['--ports', '--every', '--from', '--to', '--waveform', '--table', '--picture'],
+  ...['--activity', '--activity-picture', '--states-table', '--states-graph'],
 ]);
 const PLAIN: ReadonlySet<string> = new Set(['--changes', '--json', '--signature']);
 

@@ -40,7 +40,7 @@ export function addWaveOptions(command: Command): Command {
     .option('--picture <file>', 'draw them as a timing diagram, SVG')
     .option(
       '--nets <pattern...>',
-      'the signals to show, by hierarchical name: * stands for anything within a level, ' +
+      'the signals to show or count, by hierarchical name: * stands for anything within a level, ' +
         '** for any levels, and [7:4] at the end for a part, or [5] for a word of a memory; in a ' +
         'picture the ports unless given, else all',
     );
@@ -74,7 +74,9 @@ export function wavesWanted(
   const stray = nets.length > 0 ? '--nets' : options.from !== undefined ? '--from' : '--to';
   const isStray = nets.length > 0 || (options.from ?? options.to) !== undefined;
   if (!isAny && !isCounted && isStray) {
-    throw new UsageError(`error: ${stray} is for --waveform, --table or --picture FILE`);
+    throw new UsageError(
+      `error: ${stray} is for --waveform, --table, --picture or --activity FILE`,
+    );
   }
   if (!isAny) return [];
   const chosen = chosenSignals(circuit, nets);

@@ -10,7 +10,10 @@ export interface ActivitySummary {
   readonly still: readonly string[];
   /** Nets with the most toggles. */
   readonly busiestNets: readonly { readonly name: string; readonly toggles: number }[];
-  /** Instances with the most toggles; a net counts for the one nearest to the top that names it. */
+  /**
+   * Instances with the most toggles; a net counts for the one nearest to the top that names it.
+   * Deep ones are joined with those around them where there are many.
+   */
   readonly busiestBlocks: readonly {
     readonly name: string;
     readonly nets: number;
@@ -27,7 +30,7 @@ export function activityLines(activity: ActivitySummary | undefined): string[] {
   const perNet = nets * cycles === 0 ? 0 : toggles / (nets * cycles);
   const lines = [
     `activity: ${figure(toggles)} toggles of ${figure(nets)} nets in ${figure(cycles)} cycles, ` +
-      `${perNet.toPrecision(3)} per net and cycle; clocks apart`,
+      `${Number(perNet.toPrecision(3))} per net and cycle; clocks apart`,
   ];
   if (busiestNets.length > 0) {
     const named = busiestNets.map(({ name, toggles }) => `${name} ${figure(toggles)}`);

@@ -42,7 +42,7 @@ export function statesLines(registers: readonly StatesSummary[] = []): string[] 
     const rest = states.length - rows.length;
     return [
       `${register}: ${counted(states.length, 'state')}, ${counted(transitions.length, 'transition')}`,
-      ...aligned([head, ...rows]),
+      ...(rows.length === 0 ? [] : aligned([head, ...rows])),
       ...(rest > 0 ? [`  and ${counted(rest, 'more state')}`] : []),
     ];
   });
