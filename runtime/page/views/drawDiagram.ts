@@ -152,6 +152,7 @@ function drawWord(
   top: number,
 ): void {
   context.textAlign = 'center';
+  context.font = '11.5px ui-monospace, monospace';
   for (const { value, left, right } of stretches(values, cycleWidth)) {
     if (value === undefined) continue;
     const isUnknown = typeof value === 'string';
@@ -183,9 +184,8 @@ function label(
   top: number,
 ): void {
   const room = right - left - 2 * ROUND - 2;
-  if (room < 8) return;
   // Of a long number the end is seen: it is what changes, and the whole stands beside the name.
-  const most = Math.floor(room / 7);
+  const most = Math.floor(room / context.measureText('0').width);
   const shown = text.length <= most ? text : most >= 3 ? `…${text.slice(1 - most)}` : '';
   if (shown === '') return;
   context.fillStyle = colours.ink;
