@@ -30,7 +30,7 @@ try {
   const cycles = BEFORE_FAULT + AFTER;
   await page.getByLabel('cycles in a leap').fill(`${cycles}`);
   await page.getByRole('button', { name: 'Leap' }).click();
-  await page.locator('.where').getByText(cycles.toLocaleString('en-US')).waitFor();
+  await page.getByText(`Leapt to cycle ${cycles.toLocaleString('en-US')}.`).waitFor();
   await page.getByRole('button', { name: 'fewer cycles' }).click();
   await page.evaluate(() => window.scrollTo(0, 0));
   // The picture shows in the next frame, inner nets some frames later.

@@ -125,7 +125,8 @@ export class App implements Desk {
     session.advance(cycles, this.#diagram.visible, performance.now() + LEAP_MS);
     this.#diagram.follow();
     this.#tellFault();
-    if (session.fault !== undefined || session.model.cycle >= this.#goal) this.#goal = undefined;
+    if (session.fault !== undefined) this.#goal = undefined;
+    else if (session.model.cycle >= this.#goal) this.#land();
     else if (!this.isRunning) this.run(true);
     this.refresh();
   }
@@ -201,7 +202,16 @@ export class App implements Desk {
     session.advance(cycles, this.#diagram.visible, performance.now() + pace.runMs);
     this.#measure();
     this.#tellFault();
-    if (goal !== undefined && session.model.cycle >= goal) this.run(false);
+    if (goal !== undefined && session.model.cycle >= goal) {
+      this.run(false);
+      this.#land();
+    }
+  }
+
+  /** Ends a leap. */
+  #land(): void {
+    this.#goal = undefined;
+    this.say(`Leapt to cycle ${this.session.model.cycle.toLocaleString('en-US')}.`);
   }
 
   #measure(): void {

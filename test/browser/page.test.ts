@@ -133,7 +133,7 @@ describe('a model as one page', () => {
     await page.getByText('boats.csv drives the inputs for 500 cycles.').waitFor();
     await page.getByLabel('cycles in a leap').fill('500');
     await page.getByRole('button', { name: 'Leap' }).click();
-    await page.locator('.where').getByText('500').waitFor();
+    await page.getByText('Leapt to cycle 500.').waitFor();
     work.write('lock.v', new TextDecoder().decode(lock.circuit.sources[0]!.bytes));
     work.write('boats.csv', boats);
     const expected = await responseOfRun('boats.csv');
@@ -184,7 +184,7 @@ describe('a model as one page', () => {
     await page.getByRole('button', { name: 'Reset', exact: true }).click();
     await page.getByLabel('cycles in a leap').fill('1000000');
     await page.getByRole('button', { name: 'Leap' }).click();
-    await page.getByText('Stopped at cycle 1,000,000.').waitFor();
+    await page.getByText('Leapt to cycle 1,000,000.').waitFor();
     await page.close();
   });
 
