@@ -35,6 +35,8 @@ export interface Emission {
   readonly area: AreaLayout;
   readonly sinks: Sinks;
   readonly memories: MemoryPlaces;
+  /** Whether operations are kept in order by fences. */
+  readonly fences: boolean;
 }
 
 /** Per lane of a vector, the byte of a number whose bit it takes, and the bit. */
@@ -93,11 +95,11 @@ export class BlockEmitter {
   emit(kept: Iterable<number> = []): void {
     this.#countReads();
     for (const value of kept) this.#reads.set(value, (this.#reads.get(value) ?? 0) + 2);
-    const { module, i32 } = this.#emission;
+    const { module, i32, fences } = this.#emission;
     for (let i = this.#start; i < this.#end; i++) {
       this.#emitOperation(i);
       const done = i + 1 - this.#start;
-      if (done % STRETCH !== 0 || i + 1 === this.#end) continue;
+      if (!fences || done % STRETCH !== 0 || i + 1 === this.#end) continue;
       this.statements.push(fence(module, i32, this.#pointers.current, done / STRETCH));
     }
   }

@@ -156,13 +156,14 @@ function plainCode(
   { area, memories, index, passes }: CyclePlaces,
 ): CycleCode {
   const { i32 } = wasm;
+  const { fences = true } = passes;
   const isSmall = program.blockStart.length === 2 && program.stateCount < COPIES_IN_BLOCK;
   const groups = outputGroups(program, passes.aliasOutputs);
   // Beyond a stretch, what only the end of a cycle reads would be computed there.
   const { length } = program.outputs;
   const packsValues = isSmall && length <= SCALAR_OUTPUTS && program.op.length <= STRETCH;
   const sinks = storesOf(program, area, packsValues ? [] : outputsInMemory(groups));
-  const emission: Emission = { module, i32, program, area, sinks, memories };
+  const emission: Emission = { module, i32, program, area, sinks, memories, fences };
   const { statements, localCount } = isSmall
     ? inlineCycle(emission, packsValues)
     : callCycle(emission, `cycle${index}`, wasm.createType([i32, i32, i32]), wasm.none);
@@ -181,7 +182,9 @@ function packedCode(
 ): CycleCode {
   const groups = outputGroups(program, passes.aliasOutputs);
   const sinks = storesOf(program, area, outputsInMemory(groups));
-  const emission: Emission = { module, i32: wasm.i32, program, area, sinks, memories };
+  const { i32 } = wasm;
+  const { fences = true } = passes;
+  const emission: Emission = { module, i32, program, area, sinks, memories, fences };
   const homes = stepHomes(program.vectors!, vectorParts(program.vectors!).flat());
   const statements = packedCycle(wasm, emission, `cycle${index}`, homes);
   statements.push(...packFromMemory(emission, groups, runPointers, RunLocal.Response));

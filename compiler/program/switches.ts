@@ -21,6 +21,8 @@ export interface PassSwitches {
   readonly choosePolarity?: boolean;
   /** Cones that share logic are computed one after another. */
   readonly orderSinks?: boolean;
+  /** Branches that are never taken keep operations in their order. */
+  readonly fences?: boolean;
   /** Outputs that are neighbouring registers are not stored again. */
   readonly aliasOutputs?: boolean;
   /** Small machines run by a table of the cycles that have come before. */
@@ -40,6 +42,7 @@ export const passNames = [
   'groupRegisters',
   'choosePolarity',
   'orderSinks',
+  'fences',
   'aliasOutputs',
   'tables',
 ] as const satisfies readonly (keyof PassSwitches)[];
