@@ -40,6 +40,27 @@ export function aes128(cores: number): Module {
   return m;
 }
 
+/**
+ * One column of an AES round, as `aes_column` with inputs `clk`, `key[31:0]`, `x[31:0]` and output
+ * `y[31:0]`: it substitutes the four bytes, mixes them (FIPS 197, sections 5.1.1 and 5.1.3), adds
+ * the key and holds the sum in registers. About 700 gates, less than any core.
+ */
+export function aesColumn(): Module {
+  const substitute = sbox();
+  const m = new Module('aes_column');
+  const clock = m.input('clk');
+  const key = m.inputs('key', 32);
+  const x = m.inputs('x', 32);
+  const bytes = [0, 1, 2, 3].map(
+    (i) => m.instance<'y'>(substitute, `sbox_${i}`, { x: byteOf(x, i) }).y,
+  );
+  const mixed = m.instance<'y'>(mixColumn(), 'mix', { x: joinBytes(bytes) });
+  const column = m.wires('column', 32);
+  m.flipFlops(column, zip(m, 'xor', mixed.y, key), { clock });
+  m.output('y', column);
+  return m;
+}
+
 function aesCore(): Module {
   const substitute = sbox();
   const m = new Module('aes_core');

@@ -35,7 +35,8 @@ export async function runCommand(...args: readonly string[]): Promise<Used> {
   return (await runApart(builtCommand, args)).used;
 }
 
-async function runApart(
+/** Runs a program with Node in a process of its own. Throws an Error if that fails. */
+export async function runApart(
   program: string,
   args: readonly string[],
 ): Promise<{ used: Used; stdout: string }> {
