@@ -118,6 +118,14 @@ export class Preprocessor implements ScannerClient {
     const end = endOfName(tokens.text, start + 1);
     tokens.at = end;
     const place = { start: tokens.position(start), end: tokens.endPosition(end) };
+    if (tokens.text[start + 1] === Char.Backtick) {
+      tokens.at = endOfName(tokens.text, start + 2);
+      const message =
+        "'``' joins words in macros of SystemVerilog, but IEEE 1364-2005 Verilog is read here; " +
+        'give the macro the whole word as an argument';
+      this.#problem(message, { start: place.start, end: tokens.endPosition(start + 2) });
+      return;
+    }
     if (charClass[tokens.text[start + 1] ?? 0] !== CharClass.Letter) {
       this.#problem("the name of a directive or macro is missing after '`'", place);
       return;

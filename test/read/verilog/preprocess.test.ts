@@ -178,6 +178,11 @@ describe('faults', () => {
       'x `FOO y',
       "name-undeclared 1:3 '`FOO' the macro '`FOO' is not defined; define it before, or with --define FOO=TEXT",
     ],
+    [
+      '`define A(x) x``_d\n`A(y)',
+      "syntax-error 2:1 '`A(y)' '``' joins words in macros of SystemVerilog, but IEEE 1364-2005 " +
+        'Verilog is read here; give the macro the whole word as an argument',
+    ],
     ['` x', "syntax-error 1:1 '`' the name of a directive or macro is missing after '`'"],
     ['`define\nx', "syntax-error 1:1 '`define' the name of the macro is missing"],
     ['`define ifdef x', "syntax-error 1:1 '`define' 'ifdef' is the name of a directive"],

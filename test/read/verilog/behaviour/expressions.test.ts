@@ -12,7 +12,10 @@ const declarations = operands
 
 const inputs = fc.record(
   Object.fromEntries(
-    operands.map(({ name, width }) => [name, fc.bigInt(0n, (1n << BigInt(width)) - 1n)]),
+    operands.map(({ name, width }) => {
+      const near = fc.bigInt(-4n, 4n).map((value) => BigInt.asUintN(width, value));
+      return [name, fc.oneof(fc.bigInt(0n, (1n << BigInt(width)) - 1n), near)];
+    }),
   ),
 );
 
