@@ -2,6 +2,7 @@ import type binaryen from 'binaryen';
 import { firstState } from '../program/program.js';
 import { stepOperands, type VectorCode, VectorOp, type VectorSink } from '../program/vectorCode.js';
 import type { Emission, Pointers } from './blockEmitter.js';
+import { fence, STRETCH } from './fence.js';
 import { emitInputLanes } from './inputLanes.js';
 import { LANES } from './lanes.js';
 import { storeHalf } from './packOutputs.js';
@@ -22,8 +23,8 @@ export interface VectorTypes {
 }
 
 /**
- * Emits vector steps as straight-line code. A result read once becomes part of its reader's
- * expression; others get a local.
+ * Emits vector steps as straight-line code, with a fence after each stretch, in a block labelled
+ * `LEAVE`. A result read once becomes part of its reader's expression; others get a local.
  */
 export class VectorEmitter {
   readonly statements: binaryen.ExpressionRef[] = [];
@@ -69,10 +70,24 @@ export class VectorEmitter {
       // A multiplexer's expression reads its 0-operand twice.
       if (op === VectorOp.Mux) count(b);
     }
-    for (const { step } of [...sinks.states, ...sinks.outputs]) count(step);
-    for (let step = start; step < end; step++) this.#emitStep(step);
-    for (const sink of sinks.states) this.#storeState(sink);
-    for (const sink of sinks.outputs) this.#storeOutputs(sink);
+    const stores = new Map<number, (() => void)[]>();
+    const add = (sink: VectorSink, store: () => void): void => {
+      count(sink.step);
+      // What stands in memory, or was made by an earlier part, can be stored at any time.
+      const step = Math.max(sink.step, start);
+      stores.set(step, [...(stores.get(step) ?? []), store]);
+    };
+    for (const sink of sinks.states) add(sink, () => this.#storeState(sink));
+    for (const sink of sinks.outputs) add(sink, () => this.#storeOutputs(sink));
+    const { module } = this.#emission;
+    for (let step = start; step < end; step++) {
+      this.#emitStep(step);
+      for (const store of stores.get(step) ?? []) store();
+      const done = step + 1 - start;
+      if (done % STRETCH !== 0 || step + 1 === end) continue;
+      const number = done / STRETCH;
+      this.statements.push(fence(module, this.#types.i32, this.#pointers.current, number));
+    }
   }
 
   #emitStep(step: number): void {
