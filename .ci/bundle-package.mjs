@@ -26,7 +26,7 @@ const text = (entry, outfile, plugins = []) =>
     bundle: true,
     minify: true,
     // Where an error is thrown, Node prints the whole line.
-    lineLimit: 500,
+    lineLimit: 1000,
     format: 'esm',
     target: 'es2022',
     charset: 'utf8',

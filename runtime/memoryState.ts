@@ -26,6 +26,11 @@ export function checkMemoryState(layout: MemoryShapes, bytes: Uint8Array): void 
     const group = Math.ceil(memory.width / 8);
     const beyond = memory.width % 8 === 0 ? 0 : 0xff & (0xff << (memory.width % 8));
     const step = wordBytes(memory, layout.threeValued);
+    // Every byte is a value then.
+    if (beyond === 0 && !layout.threeValued) {
+      at += memory.depth * step;
+      continue;
+    }
     for (let word = 0; word < memory.depth; word++, at += step) {
       if (isWord(bytes, at, group, beyond, layout.threeValued)) continue;
       throw new RangeError(`byte ${at} and on: no value of ${memory.name}[${word}]`);

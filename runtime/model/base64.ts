@@ -11,5 +11,9 @@ export function toBase64(bytes: Uint8Array): string {
 }
 
 /** The bytes that base64 stands for. Throws what `atob` throws for other text. */
-export const fromBase64 = (text: string): Uint8Array<ArrayBuffer> =>
-  Uint8Array.from(atob(text), (character) => character.charCodeAt(0));
+export function fromBase64(text: string): Uint8Array<ArrayBuffer> {
+  const characters = atob(text);
+  const bytes = new Uint8Array(characters.length);
+  for (let i = 0; i < bytes.length; i++) bytes[i] = characters.charCodeAt(i);
+  return bytes;
+}

@@ -29,6 +29,8 @@ export class ModelEngine {
   readonly #model: BareModel;
   readonly #exports: ModelExports;
   readonly #initialMemory: Uint8Array;
+  /** The contents of memories while a preview may change them. */
+  readonly #kept: Uint8Array;
   readonly #stimulusWords: number;
   readonly #responseWords: number;
   readonly #stimulus: number;
@@ -40,6 +42,7 @@ export class ModelEngine {
     this.#model = model;
     this.#exports = instance.exports as unknown as ModelExports;
     this.#initialMemory = this.memoryState();
+    this.#kept = new Uint8Array(this.#initialMemory.length);
     const { inputs, outputs, threeValued } = model.layout;
     this.#stimulusWords = rowStride(inputs, threeValued);
     this.#responseWords = rowStride(outputs, threeValued);
@@ -94,14 +97,14 @@ export class ModelEngine {
   preview(stimulus: Uint32Array, response: Uint32Array): void {
     const { current, position } = this.#exports;
     const [area, place] = [current.value, position.value];
-    const contents = this.layout.memories.length > 0 ? this.memoryState() : undefined;
+    this.#kept.set(this.contents);
     try {
       this.run(1, stimulus, 0, response);
     } finally {
       // A cycle writes to the other area only, so the one that it read is as it was.
       current.value = area;
       position.value = place;
-      if (contents !== undefined) this.contents.set(contents);
+      this.contents.set(this.#kept);
     }
   }
 
