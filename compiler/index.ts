@@ -22,6 +22,11 @@ export {
   type ModelOptions,
 } from './compile.js';
 export { compileLanes } from './compileLanes.js';
+export {
+  addConditions,
+  type ConditionOptions,
+  type WatchedConditions,
+} from './condition/conditions.js';
 export { codeTable, type DiagnosticCode, type Severity } from './diagnostics/codes.js';
 export { type Diagnostic, Diagnostics, headline, InputError } from './diagnostics/diagnostics.js';
 export { Source, type Span } from './diagnostics/source.js';
@@ -65,6 +70,7 @@ export type {
   StatesSummary,
   TransitionSummary,
 } from './run/outlets/statesSummary.js';
+export { type StopCondition, type StopOptions, stopWhen } from './run/outlets/stopWhen.js';
 export { writeResponse } from './run/outlets/writeResponse.js';
 export { type RunRequest, runDesign } from './run/runDesign.js';
 export type { RunRecorder, RunStart } from './run/runRecorder.js';
