@@ -39,6 +39,15 @@ const skipLine: SettingDirective = (_settings, tokens) => {
   readLine(tokens);
 };
 
+// Not in IEEE 1364, but in cell libraries as they are shipped (common practice): words without
+// arguments about faults, the speed of a simulation and the names of gates.
+const practice = [
+  ...['suppress_faults', 'nosuppress_faults', 'enable_portfaults', 'disable_portfaults'],
+  ...['accelerate', 'noaccelerate', 'expand_vectornets', 'noexpand_vectornets'],
+  ...['autoexpand_vectornets', 'remove_gatenames', 'noremove_gatenames', 'remove_netnames'],
+  ...['noremove_netnames', 'protect', 'endprotect'],
+];
+
 /** Directives that set something, or nothing that a zero-delay model needs, by name. */
 export const settingDirectives: ReadonlyMap<string, SettingDirective> = new Map([
   [
@@ -79,6 +88,7 @@ export const settingDirectives: ReadonlyMap<string, SettingDirective> = new Map(
   ['delay_mode_path', skipLine],
   ['delay_mode_unit', skipLine],
   ['delay_mode_zero', skipLine],
+  ...practice.map((name) => [name, () => {}]),
 ] as [string, SettingDirective][]);
 
 function setDefaultNetType(

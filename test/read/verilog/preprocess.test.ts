@@ -169,6 +169,11 @@ describe('settings', () => {
       ),
     ).toBe('a b c f g');
   });
+
+  it('directives of cell libraries that are not of the standard are passed over', () => {
+    const text = '`suppress_faults\n`enable_portfaults a\n`disable_portfaults `nosuppress_faults b';
+    expect(words(text)).toBe('a b');
+  });
 });
 
 describe('faults', () => {
