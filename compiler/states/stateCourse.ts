@@ -48,9 +48,10 @@ export class StateCourse {
   /** How often it has been taken since it was counted last. */
   #stays = 0;
   #followedTo: number | null = null;
-  /** Bits of the present state and what tells which are x, 32 at a time. */
-  readonly #bits: Uint32Array;
-  readonly #unknown: Uint32Array;
+  /** The words of a row in which the bits stand: a 1 for each of these bits. */
+  readonly #masks: Uint32Array;
+  /** These words in the row before, and behind them those that tell x. */
+  readonly #before: Uint32Array;
 
   /** Of `width` bits from bit `offset` on. */
   constructor(name: string, offset: number, width: number, place: WatchedPlace) {
@@ -58,8 +59,12 @@ export class StateCourse {
     this.#offset = offset;
     this.#width = width;
     this.#place = place;
-    this.#bits = new Uint32Array(Math.ceil(width / 32));
-    this.#unknown = new Uint32Array(this.#bits.length);
+    const first = offset & 31;
+    const words = Math.ceil((first + width) / 32);
+    this.#masks = new Uint32Array(words).fill(0xffffffff);
+    this.#masks[0]! &= -1 << first;
+    this.#masks[words - 1]! &= -1 >>> ((32 - ((first + width) & 31)) & 31);
+    this.#before = new Uint32Array(2 * words);
   }
 
   /** Goes on from what was saved. */
@@ -95,9 +100,10 @@ export class StateCourse {
 
   /** Takes the next cycles. */
   take({ firstCycle, cycles, watched }: OutletBlock): void {
+    const { stride, firstWord } = this.#place;
     for (let row = 0; row < cycles && this.#followedTo === null; row++) {
-      const at = row * this.#place.stride + this.#place.firstWord;
-      if (this.#isSame(watched, at) && this.#stay >= 0) this.#stays++;
+      const at = row * stride + firstWord;
+      if (this.#isSame(watched, at + (this.#offset >>> 5)) && this.#stay >= 0) this.#stays++;
       else this.#look(watched, at, firstCycle + row);
     }
   }
@@ -120,21 +126,21 @@ export class StateCourse {
     };
   }
 
-  // Takes over the bits of a row; returns whether they were the same before.
+  // Takes over the words of a row from `at` on; returns whether the bits were the same before.
   #isSame(rows: Uint32Array, at: number): boolean {
     const { toUnknown } = this.#place;
-    let isSame = true;
-    for (let part = 0; part < this.#bits.length; part++) {
-      const bit = this.#offset + 32 * part;
-      const count = Math.min(32, this.#width - 32 * part);
-      const bits = readBits(rows, at, bit, count);
-      const unknown = toUnknown === undefined ? 0 : readBits(rows, at + toUnknown, bit, count);
-      if (bits === this.#bits[part] && unknown === this.#unknown[part]) continue;
-      isSame = false;
-      this.#bits[part] = bits;
-      this.#unknown[part] = unknown;
+    const [masks, before] = [this.#masks, this.#before];
+    let differing = 0;
+    for (let word = 0; word < masks.length; word++) {
+      const bits = rows[at + word]!;
+      differing |= (bits ^ before[word]!) & masks[word]!;
+      before[word] = bits;
+      if (toUnknown === undefined) continue;
+      const unknown = rows[at + toUnknown + word]!;
+      differing |= (unknown ^ before[masks.length + word]!) & masks[word]!;
+      before[masks.length + word] = unknown;
     }
-    return isSame;
+    return differing === 0;
   }
 
   #look(rows: Uint32Array, at: number, cycle: number): void {
@@ -160,8 +166,7 @@ export class StateCourse {
 
   // The number of the state in a row, -1 where there are too many.
   #stateAt(rows: Uint32Array, at: number, cycle: number): number {
-    const isNumber = this.#bits.length === 1 && this.#unknown[0] === 0;
-    const key = isNumber ? this.#bits[0]! : this.#text(rows, at);
+    const key = this.#keyOf(rows, at);
     const known = this.#numbers.get(key);
     if (known !== undefined) return known;
     const state = this.#keys.length;
@@ -172,6 +177,14 @@ export class StateCourse {
     this.#cycles.push(0);
     this.#first.push(cycle);
     return state;
+  }
+
+  #keyOf(rows: Uint32Array, at: number): Key {
+    const [offset, width] = [this.#offset, this.#width];
+    const { toUnknown } = this.#place;
+    if (width > 32) return this.#text(rows, at);
+    const isKnown = toUnknown === undefined || readBits(rows, at + toUnknown, offset, width) === 0;
+    return isKnown ? readBits(rows, at, offset, width) : this.#text(rows, at);
   }
 
   #text(rows: Uint32Array, at: number): string {
