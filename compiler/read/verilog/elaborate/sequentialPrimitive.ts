@@ -44,10 +44,11 @@ export function lowerSequential(
       table: sequentialTable(cell.name, inputs.length, cell.source, roles),
     });
   };
+  const isLatch = reason === undefined && clocks.length > 1;
   const ticking = reason === undefined ? clocks : clocks.filter((edge) => behaviour.ticks(edge));
   const roles = {
     ...behaviour.levels(),
-    clocks: [...new Set(ticking.map(({ input }) => input))],
+    clocks: isLatch ? [] : [...new Set(ticking.map(({ input }) => input))],
   };
   if (reason === undefined) {
     if (cell.isExact) addTable({ ...roles, isRecognized: true, edges: [] }, []);
@@ -73,6 +74,8 @@ function buildRecognized(
   recording: Recording,
 ): string | undefined {
   if (clocks.length > 1) {
+    // A latch may be written by the edges of all its inputs.
+    if (buildLatch(behaviour, pins, recording) === undefined) return undefined;
     const names = [...new Set(clocks.map(({ input }) => pins.names[input]))];
     const what = names.length === 1 ? `both edges of ${names[0]}` : `edges of ${names.join(', ')}`;
     return `${what} give it a new value`;

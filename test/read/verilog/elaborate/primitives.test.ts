@@ -3,7 +3,7 @@ import type { Circuit } from '../../../../compiler/circuit/circuit.js';
 import { Edge, Priority } from '../../../../compiler/circuit/circuit.js';
 import { findClockPorts } from '../../../../compiler/circuit/clockPorts.js';
 import { NO_NET } from '../../../../compiler/circuit/ids.js';
-import { circuitOf, evaluate, gatesOf, netsOf, reading, signalValue } from './reading.js';
+import { circuitOf, evaluate, gatesOf, netsOf, portsOf, reading, signalValue } from './reading.js';
 
 /** A module t with the scalar inputs given, and one instance of the primitive p that drives q. */
 function using(primitive: string, inputs: string): string {
@@ -239,5 +239,19 @@ describe('sequential primitives', () => {
     const row = `${'? '.repeat(13)}: 1;`;
     const { problems } = reading(using(primitive(inputs, row), inputs));
     expect(problems[0]).toBe('not-supported p@1');
+  });
+});
+
+describe('a latch written by the edges of its inputs', () => {
+  it('is a latch all the same, and no clock', () => {
+    const circuit = circuitOf(`
+      primitive p (q, d, g, r); output q; reg q; input d, g, r; table
+        ? ? 1 : ? : 0;  (?0) 1 0 : ? : 0;  (?1) 1 0 : ? : 1;
+        0 (?1) 0 : ? : 0;  1 (?1) 0 : ? : 1;  0 1 (?0) : ? : 0;  1 1 (?0) : ? : 1;
+        * 0 0 : ? : -;  ? (?0) 0 : ? : -;  ? 0 (?0) : ? : -;
+      endtable endprimitive
+      module t (input d, g, r, output q); p u (q, d, g, r); endmodule`);
+    expect([circuit.latches.count, circuit.registers.count]).toEqual([1, 0]);
+    expect(portsOf(circuit.inputs)).toEqual(['d', 'g', 'r']);
   });
 });
