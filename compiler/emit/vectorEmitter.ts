@@ -79,12 +79,12 @@ export class VectorEmitter {
     };
     for (const sink of sinks.states) add(sink, () => this.#storeState(sink));
     for (const sink of sinks.outputs) add(sink, () => this.#storeOutputs(sink));
-    const { module } = this.#emission;
+    const { module, fences } = this.#emission;
     for (let step = start; step < end; step++) {
       this.#emitStep(step);
       for (const store of stores.get(step) ?? []) store();
       const done = step + 1 - start;
-      if (done % STRETCH !== 0 || step + 1 === end) continue;
+      if (!fences || done % STRETCH !== 0 || step + 1 === end) continue;
       const number = done / STRETCH;
       this.statements.push(fence(module, this.#types.i32, this.#pointers.current, number));
     }

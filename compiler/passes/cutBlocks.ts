@@ -1,7 +1,7 @@
 import { type Logic, LogicOp } from '../logic/logic.js';
 
 /**
- * Fewest and most nodes of a block. Functions of 300 to 2,000 operations run equally fast; beyond
+ * Most nodes of a block, and the part of them that it has at least. Functions of 300 to 2,000 operations run equally fast; beyond
  * some 6,000 the optimizing tier of a WebAssembly engine may fall back to a weaker register
  * allocator.
  */
@@ -9,8 +9,9 @@ const LEAST_PART = 5 / 12;
 const MOST = 1200;
 
 /**
- * Cuts an order of nodes into blocks, each to become one function: between five twelfths of
- * `most` and `most` nodes, at the place that the fewest values cross, since each of these passes through memory.
+ * Cuts an order of nodes into blocks, each to become one function: `most` nodes or at least
+ * `LEAST_PART` of these, at the place that the fewest values cross, since each of these passes
+ * through memory.
  *
  * Returns the places in `order` at which blocks start, the first being 0.
  */

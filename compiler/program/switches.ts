@@ -3,7 +3,10 @@
  * responses, states and names stay the same.
  */
 export interface PassSwitches {
-  /** Equal nodes are made once (structural hashing); `mergeRegisters` and `sweepNodes` are left out with it. */
+  /**
+   * Equal nodes are made once (structural hashing); `mergeRegisters` and `sweepNodes` are left out
+   * with it.
+   */
   readonly share?: boolean;
   /** Exclusive-ors and multiplexers are recognised in and/or form. */
   readonly recover?: boolean;

@@ -105,9 +105,14 @@ export class LaneCore {
     throw new RangeError(`expected a lane from 0 to ${this.lanes - 1}, got ${shown(lane)}`);
   }
 
+  /** Whether a lane has not ended. */
+  isRunning(lane: number): boolean {
+    return ((this.#engine.running[lane >>> 5]! >>> (lane & 31)) & 1) === 1;
+  }
+
   /** Whether a lane goes on and has a result with its present inputs. */
   hasResult(lane: number): boolean {
-    return this.#isRunning(lane) && !this.failing().has(lane);
+    return this.isRunning(lane) && !this.failing().has(lane);
   }
 
   /** Throws `RunFault` for a lane that has ended. */
@@ -240,10 +245,6 @@ export class LaneCore {
     this.#probes!.restore({ state, before, memory: memories, position });
     this.#probes!.run(1, this.#inputs[lane]!, 0, row);
     return row;
-  }
-
-  #isRunning(lane: number): boolean {
-    return ((this.#engine.running[lane >>> 5]! >>> (lane & 31)) & 1) === 1;
   }
 
   #follow(cycles: number, inputs: () => readonly Uint32Array[]): void {

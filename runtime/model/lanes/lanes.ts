@@ -20,7 +20,10 @@ interface Parts {
   readonly powerUp: Uint8Array | readonly Uint8Array[];
 }
 
-/** A value for each lane; undefined for one that has ended. */
+/**
+ * A value for each lane; undefined for one that has ended, and where outputs and nets are read, for
+ * one that has no result with its present inputs.
+ */
 export type EachLane<T> = (T | undefined)[];
 
 /**
@@ -157,7 +160,11 @@ export class Lanes {
   save(lane: number): SavedState;
   save(lane?: number): SavedState | EachLane<SavedState> {
     const core: LaneCore = this.#live;
-    return this.#perLane(lane, (each) => saved(core.description, core.standing(each)));
+    return this.#perLane(
+      lane,
+      (each) => saved(core.description, core.standing(each)),
+      (each) => core.isRunning(each),
+    );
   }
 
   /**
@@ -218,15 +225,17 @@ export class Lanes {
   }
 
   // For one lane what it is, for all of them a list.
-  #perLane<T>(lane: number | undefined, of: (lane: number) => T): T | EachLane<T> {
+  #perLane<T>(
+    lane: number | undefined,
+    of: (lane: number) => T,
+    isThere = (each: number): boolean => this.#live.hasResult(each),
+  ): T | EachLane<T> {
     const core: LaneCore = this.#live;
     if (lane !== undefined) {
       core.check(lane);
       core.checkRunning(lane);
       return of(lane);
     }
-    return Array.from({ length: core.lanes }, (_, each) =>
-      core.hasResult(each) ? of(each) : undefined,
-    );
+    return Array.from({ length: core.lanes }, (_, each) => (isThere(each) ? of(each) : undefined));
   }
 }
