@@ -66,8 +66,8 @@ function joined({ name, width }: Pick<KeptNet, 'name' | 'width'>, bit: (i: numbe
   return readValue({ words: row, at: 0, unknownAt: words }, { name, width, offset: 0 });
 }
 
-/** The word that a text of indices means, -1 where there is none. */
-function wordOf(indices: KeptMemory['indices'], text: string): number {
+/** The word that a text of indices such as `[3]` or `[-1][8]` means, -1 where there is none. */
+export function wordOf(indices: KeptMemory['indices'], text: string): number {
   const given = text.match(/-?\d+/g) ?? [];
   if (given.map((index) => `[${index}]`).join('') !== text || given.length !== indices.length) {
     return -1;

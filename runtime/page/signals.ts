@@ -1,6 +1,7 @@
 import type { PortLayout } from '../layout.js';
 import type { KeptMemory, KeptNet } from '../model/description.js';
 import type { Model } from '../model/model.js';
+import { wordOf } from '../model/nets.js';
 
 /** Something with a value in each cycle: a port, a register, a kept net or a word of a memory. */
 export interface Signal {
@@ -56,29 +57,12 @@ export function wordAt({ name, width, indices }: KeptMemory, position: number): 
   return { name: `${name}${selects}`, width, kind: 'net', port: undefined };
 }
 
-/** Where the word with some indices stands; undefined where there is none. */
-export function wordPosition(
-  { indices }: KeptMemory,
-  given: readonly number[],
-): number | undefined {
-  if (given.length !== indices.length) return undefined;
-  let position = 0;
-  for (const [i, { low, size }] of indices.entries()) {
-    const place = given[i]! - low;
-    if (!Number.isInteger(place) || place < 0 || place >= size) return undefined;
-    position = position * size + place;
-  }
-  return position;
-}
-
 /** The word of one of some memories that a name such as `m[3]` stands for. */
 export function wordNamed(memories: readonly KeptMemory[], name: string): Signal | undefined {
   for (const memory of memories) {
     if (!name.startsWith(`${memory.name}[`)) continue;
-    const [, selects] = /^((?:\[\d+\])+)$/.exec(name.slice(memory.name.length)) ?? [];
-    const given = Array.from(selects?.matchAll(/\d+/g) ?? [], ([digits]) => Number(digits));
-    const position = wordPosition(memory, given);
-    if (position !== undefined) return wordAt(memory, position);
+    const position = wordOf(memory.indices, name.slice(memory.name.length));
+    if (position >= 0) return wordAt(memory, position);
   }
   return undefined;
 }

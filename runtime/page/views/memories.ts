@@ -1,7 +1,8 @@
 import type { KeptMemory } from '../../model/description.js';
+import { wordOf } from '../../model/nets.js';
 import type { Desk, View } from '../desk.js';
 import { button, element, freshId, setText } from '../dom.js';
-import { wordAt, wordCount, wordPosition } from '../signals.js';
+import { wordAt, wordCount } from '../signals.js';
 import { type Branch, joined, rowOf } from './signalRow.js';
 
 /** Words of a memory that are shown at a time. */
@@ -51,8 +52,8 @@ function memoryOf(desk: Desk, memory: KeptMemory): Branch {
   };
   field.addEventListener('change', () => {
     const texts = field.value.split(/[\s,[\]]+/).filter((text) => text !== '');
-    const position = wordPosition(memory, texts.map(Number));
-    if (position !== undefined) {
+    const position = wordOf(indices, texts.map((text) => `[${text}]`).join(''));
+    if (position >= 0) {
       show(position);
       return;
     }

@@ -1,5 +1,5 @@
 import { describe, expect, it } from 'vitest';
-import { wordAt, wordCount, wordNamed, wordPosition } from '../../../runtime/page/signals.js';
+import { wordAt, wordCount, wordNamed } from '../../../runtime/page/signals.js';
 
 const memory = {
   name: 'a.m',
@@ -37,7 +37,18 @@ describe('words of a memory with two indices', () => {
   );
 
   it('do not stand between two', () => {
-    expect(wordPosition(memory, [1, 8.5])).toBeUndefined();
-    expect(wordPosition(memory, [3, 12])).toBe(14);
+    expect(wordNamed([memory], 'a.m[1][8.5]')).toBeUndefined();
+  });
+});
+
+describe('words of a memory with negative indices', () => {
+  it('have names that lead back to them', () => {
+    const below = { name: 'm', width: 8, indices: [{ low: -2, size: 4 }], from: 0 };
+    const names = Array.from({ length: wordCount(below) }, (_, i) => wordAt(below, i).name);
+    expect(names).toEqual(['m[-2]', 'm[-1]', 'm[0]', 'm[1]']);
+    for (const [i, name] of names.entries()) {
+      expect(wordNamed([below], name)).toEqual(wordAt(below, i));
+    }
+    expect(wordNamed([below], 'm[-3]')).toBeUndefined();
   });
 });
