@@ -3,6 +3,9 @@ import { LANES } from './lanes.js';
 import { type Staging, stageWrites } from './memory/staging.js';
 import { stepHomes, vectorParts } from './vectorParts.js';
 
+/** Address of the first area; what lies below stays zero. */
+export const FIRST_AREA = 1024;
+
 /** Where a program's values stand within one of the two memory areas; offsets in bytes. */
 export interface AreaLayout {
   /** One byte per output bit, for packing; rounded up to whole groups of 32. */

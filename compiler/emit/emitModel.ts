@@ -9,7 +9,7 @@ import {
 } from '../program/memoryPlaces.js';
 import type { CyclePrograms, Program } from '../program/program.js';
 import type { PassSwitches } from '../program/switches.js';
-import { type AreaLayout, layArea } from './areaLayout.js';
+import { type AreaLayout, FIRST_AREA, layArea } from './areaLayout.js';
 import { BlockEmitter, type Emission, type Pointers } from './blockEmitter.js';
 import { compareState } from './compareState.js';
 import { LEAVE, STRETCH } from './fence.js';
@@ -27,9 +27,6 @@ import { storesOf } from './sinks.js';
 import { addTableLoop, canHaveTable } from './tableLoop.js';
 import { emitUpdates } from './updates.js';
 import { stepHomes, vectorParts } from './vectorParts.js';
-
-/** Address of the first area; what lies below stays zero. */
-const FIRST_AREA = 1024;
 
 /** Copies in one function, where values pass from inputs or states straight to states or outputs. */
 const COPIES_IN_BLOCK = 1000;

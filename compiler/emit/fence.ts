@@ -1,13 +1,11 @@
 import type binaryen from 'binaryen';
+import { FIRST_AREA } from './areaLayout.js';
 
 /** Label of the block around all code of a function, to which fences would branch. */
 export const LEAVE = 'leave';
 
 /** Operations between two fences: about what an engine's registers can serve. */
 export const STRETCH = 24;
-
-/** Conditions that an engine can tell from each other, and addresses where no area stands. */
-const CONDITIONS = 1000;
 
 /**
  * A branch to `LEAVE` that is never taken, since no area stands at an address that low. It keeps
@@ -25,6 +23,6 @@ export function fence(
   current: number,
   number: number,
 ): binaryen.ExpressionRef {
-  const condition = i32.eq(local.get(current, type), i32.const(1 + (number % CONDITIONS)));
+  const condition = i32.eq(local.get(current, type), i32.const(1 + (number % (FIRST_AREA - 1))));
   return br(LEAVE, condition);
 }

@@ -1,6 +1,6 @@
 import { type Literal, type Logic, LogicOp } from './logic.js';
 import type { LogicBuilder } from './logicBuilder.js';
-import { mapWrite } from './writes.js';
+import { mapEffects } from './sinks.js';
 
 /** Gives the literal that stands for a literal of the graph before. */
 export type Mover = (literal: Literal) => Literal;
@@ -26,13 +26,7 @@ export function rebuildInto(
     nodeCount: columns.op.length,
     outputs: logic.outputs.map(moved),
     next: logic.next.map(moved),
-    updates: logic.updates.map((update) => ({
-      ...update,
-      enable: moved(update.enable),
-      gate: moved(update.gate),
-    })),
-    writes: logic.writes.map((write) => mapWrite(write, moved)),
-    faults: logic.faults.map((fault) => ({ ...fault, when: moved(fault.when) })),
+    ...mapEffects(logic, moved),
   };
 }
 

@@ -1,6 +1,5 @@
 import { type Literal, type Logic, LogicOp } from '../logic/logic.js';
-import { sinksOf } from '../logic/sinks.js';
-import { mapWrite } from '../logic/writes.js';
+import { mapEffects, sinksOf } from '../logic/sinks.js';
 
 /**
  * Removes nodes that nothing reads, and state bits that only remember an input nobody asks for.
@@ -84,12 +83,6 @@ function rebuilt(logic: Logic, live: Uint8Array, keptState: readonly boolean[]):
     outputs: logic.outputs.map(moved),
     next: logic.next.filter((_, bit) => keptState[bit]).map(moved),
     states: logic.states.filter((_, bit) => keptState[bit]),
-    updates: logic.updates.map((update) => ({
-      ...update,
-      enable: moved(update.enable),
-      gate: moved(update.gate),
-    })),
-    writes: logic.writes.map((write) => mapWrite(write, moved)),
-    faults: logic.faults.map((fault) => ({ ...fault, when: moved(fault.when) })),
+    ...mapEffects(logic, moved),
   };
 }

@@ -2,6 +2,7 @@ import type { DerivedState } from '../../../runtime/stateBits.js';
 import { FALSE, type Literal, type Logic, LogicOp } from '../../logic/logic.js';
 import { LogicBuilder, type LogicOptions } from '../../logic/logicBuilder.js';
 import { builtNode } from '../../logic/rebuild.js';
+import { mapEffects } from '../../logic/sinks.js';
 import { WindowProof } from '../../logic/windowProof.js';
 import { signaturesOf } from './signatures.js';
 
@@ -146,7 +147,7 @@ class Build {
         outputs: logic.outputs.map((literal) => this.#moved(literal)),
         next: leaders.map((bit) => this.next[bit]!),
         states: leaders.map((bit) => logic.states[bit]!),
-        faults: logic.faults.map((fault) => ({ ...fault, when: this.#moved(fault.when) })),
+        ...mapEffects(logic, (literal) => this.#moved(literal)),
       },
       derived,
     };

@@ -6,7 +6,7 @@ import {
   type LogicState,
   nodeOf,
 } from '../../logic/logic.js';
-import { mapWrite } from '../../logic/writes.js';
+import { mapEffects } from '../../logic/sinks.js';
 import type { VectorSink } from '../../program/vectorCode.js';
 import { growPacks } from './growPacks.js';
 import { LANES, type Packs, type Tuple } from './packs.js';
@@ -219,8 +219,7 @@ class Packing {
         bit < 0 || byVector[place] === 1 ? FALSE : moved(logic.next[bit]!),
       ),
       states: this.#placement.map((bit) => logic.states[bit] ?? unused),
-      writes: logic.writes.map((write) => mapWrite(write, moved)),
-      faults: logic.faults.map((fault) => ({ ...fault, when: moved(fault.when) })),
+      ...mapEffects(logic, moved),
     };
     return { scalar, fixedStates: this.#fixedStates(scalar) };
   }
