@@ -10,8 +10,8 @@ import { type NpmName, npmNameOf } from '../pack/packageJson.js';
 import { type PackSummary, packDesign } from '../pack/packDesign.js';
 import { FolderRefused } from '../pack/writePackage.js';
 import { REGISTER_LIMIT } from '../read/verilog/behaviour/memorySelect.js';
+import { figure } from '../report/figures.js';
 import { Progress } from '../run/progress.js';
-import { count } from '../run/runSummary.js';
 import { addClockOption, type ClockOptions, timedDesign } from './clockOption.js';
 import { addNetlistOptions, loadCircuit, type NetlistOptions } from './netlists.js';
 import { printDiagnostics } from './printDiagnostics.js';
@@ -145,12 +145,12 @@ function readingOf({
 function textOf({ model, output, page, files, check, keptNets }: PackSummary): string {
   const sizes = ['model.wasm', 'model.mjs', 'worker.mjs']
     .filter((name) => name in files)
-    .map((name) => `  ${name.padEnd(12)} ${count(files[name]!)} bytes`);
+    .map((name) => `  ${name.padEnd(12)} ${figure(files[name]!)} bytes`);
   return [
     ...(output === undefined ? [] : [`${model} is packed in ${output}`, ...sizes]),
     ...(page === undefined ? [] : [`${model} as a page is ${page}`]),
-    `  ${count(keptNets)} names to peek at`,
-    `agrees with the reference over ${count(check.cycles)} cycles of random inputs (seed ${check.seed})`,
+    `  ${figure(keptNets)} names to peek at`,
+    `agrees with the reference over ${figure(check.cycles)} cycles of random inputs (seed ${check.seed})`,
   ].join('\n');
 }
 

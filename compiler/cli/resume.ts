@@ -8,8 +8,9 @@ import { isIntact, type SavedResponse } from '../record/recordedResponse.js';
 import { FolderFiles } from '../record/recordFiles.js';
 import { RunRecord } from '../record/runRecord.js';
 import { DamagedFile } from '../record/sealedText.js';
+import { figure } from '../report/figures.js';
 import type { RunStart } from '../run/runRecorder.js';
-import { count, exitStatus, summaryText } from '../run/runSummary.js';
+import { exitStatus, summaryText } from '../run/runSummary.js';
 import type { ReadFile } from './netlists.js';
 import { inputsOf, lock, markOf, type RecordSession, session } from './run/recordOptions.js';
 import { type RunOptions, run, runCommand } from './run.js';
@@ -65,8 +66,8 @@ async function resume(dir: string, { json }: { readonly json?: true }): Promise<
   await run(files, wanted, async (design, netlists): Promise<RecordSession> => {
     await refuseChanges(record, design, netlists, wanted);
     const from = await newestWhole(record, wanted);
-    const stop = goesPast ? `, past its stop at cycle ${count(past)}` : '';
-    process.stderr.write(`${dir}: goes on at cycle ${count(from?.cycle ?? 0)}${stop}\n`);
+    const stop = goesPast ? `, past its stop at cycle ${figure(past)}` : '';
+    process.stderr.write(`${dir}: goes on at cycle ${figure(from?.cycle ?? 0)}${stop}\n`);
     if (goesPast) await record.reopen();
     return session(record, from, unlock);
   }).finally(unlock);

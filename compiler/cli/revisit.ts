@@ -3,9 +3,10 @@ import { Command, Option } from 'commander';
 import { startEmitter } from '../emit/emitter.js';
 import { type EngineName, engineNames } from '../engines.js';
 import type { RunRecord } from '../record/runRecord.js';
+import { figure } from '../report/figures.js';
 import { type Revisited, revisitDesign } from '../revisit/revisitDesign.js';
 import type { RunStart } from '../run/runRecorder.js';
-import { count, type RunSummary } from '../run/runSummary.js';
+import type { RunSummary } from '../run/runSummary.js';
 import { writeWave } from '../waveform/writeWave.js';
 import { timedDesign } from './clockOption.js';
 import { loadCircuit } from './netlists.js';
@@ -110,7 +111,7 @@ function shiftOf(dir: string, from: number, result: RunSummary | undefined): num
   const { repetition, cycles } = result;
   if (repetition === undefined) {
     throw new UsageError(
-      `error: ${dir}: the run has ${count(cycles)} cycles, and its period is not known ` +
+      `error: ${dir}: the run has ${figure(cycles)} cycles, and its period is not known ` +
         '(--find-period); --from must be less',
     );
   }
@@ -134,7 +135,7 @@ function report(options: RevisitOptions, seen: Revisited, told: Told): void {
   const { from } = options;
   const { shown, engine, fault } = seen;
   if (shown === 0) {
-    throw new UsageError(`error: ${told.dir}: the run ends before cycle ${count(from)}`);
+    throw new UsageError(`error: ${told.dir}: the run ends before cycle ${figure(from)}`);
   }
   if (fault !== undefined) process.exitCode = 1;
   if (options.json) {
@@ -145,16 +146,16 @@ function report(options: RevisitOptions, seen: Revisited, told: Told): void {
     process.stdout.write(`${JSON.stringify(summary, null, 2)}\n`);
     return;
   }
-  const last = count(from + shown - 1);
+  const last = figure(from + shown - 1);
   const lines = told.waves.map(
-    ({ path, list }) => `${shownPath(path)}: ${count(list.count)} signals of ${told.circuit}`,
+    ({ path, list }) => `${shownPath(path)}: ${figure(list.count)} signals of ${told.circuit}`,
   );
   lines.push(
-    `cycles ${count(from)} to ${last}, from the checkpoint at cycle ${count(told.start)} ` +
+    `cycles ${figure(from)} to ${last}, from the checkpoint at cycle ${figure(told.start)} ` +
       `(engine ${engine})`,
   );
   if (fault !== undefined) {
-    lines.push(`cycle ${count(from + shown)} has no result: ${fault.message}`);
+    lines.push(`cycle ${figure(from + shown)} has no result: ${fault.message}`);
   } else if (from + shown - 1 < options.to) lines.push('the run ends there');
   process.stdout.write(`${lines.join('\n')}\n`);
 }

@@ -1,5 +1,6 @@
 import type { Engine, MarkingEngine, RunPoint } from '../../runtime/engine.js';
 import type { StimulusBlock } from '../../runtime/stream.js';
+import { figure } from '../report/figures.js';
 import type {
   Findings,
   Outlet,
@@ -129,7 +130,7 @@ class SearchOutlet implements Outlet {
       return { notes: ['the run ended before its inputs were held: no period was looked for'] };
     }
     if (this.#period === undefined) {
-      const looked = (cycles - first.cycle).toLocaleString('en-US');
+      const looked = figure(cycles - first.cycle);
       return { notes: [`no state came again in ${looked} cycles with the inputs held`] };
     }
     const end = this.#engine.save();

@@ -1,3 +1,4 @@
+import { figure } from '../report/figures.js';
 import type { RunRecorder, RunStart } from '../run/runRecorder.js';
 import { INTERRUPTED, type RunSummary } from '../run/runSummary.js';
 import type { RunRecord } from './runRecord.js';
@@ -77,7 +78,7 @@ export class Recorder implements RunRecorder {
       await this.#attempt(() => this.#record.close(summary), 'the end of the run');
     }
     if (this.#failures === 0) return notes;
-    const cycle = this.#last.toLocaleString('en-US');
+    const cycle = figure(this.#last);
     const times = `${this.#failures} times the record could not be written`;
     return [`${times}; its newest checkpoint is of cycle ${cycle}`, ...notes];
   }

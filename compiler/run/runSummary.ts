@@ -1,6 +1,7 @@
 import type { Departure } from '../../runtime/node/index.js';
 import type { PowerUp } from '../circuit/powerUp.js';
 import type { EngineName } from '../engines.js';
+import { figure } from '../report/figures.js';
 import { type ActivitySummary, activityLines } from './outlets/activitySummary.js';
 import { type BusEvent, busEventText } from './outlets/busEvent.js';
 import { type StatesSummary, statesLines } from './outlets/statesSummary.js';
@@ -67,7 +68,7 @@ const isTold = ({ stopped }: RunSummary): boolean =>
 export function summaryText(summary: RunSummary, expectation: string | undefined): string {
   const { cycles, seconds, cyclesPerSecond, engine, powerUp } = summary;
   const lines = [
-    `${count(cycles)} cycles in ${seconds.toFixed(2)} s, ${rateText(cyclesPerSecond)}` +
+    `${figure(cycles)} cycles in ${seconds.toFixed(2)} s, ${rateText(cyclesPerSecond)}` +
       ` (engine ${engine}, power-up ${powerUp})`,
   ];
   lines.push(...signatureLines(summary));
@@ -76,7 +77,7 @@ export function summaryText(summary: RunSummary, expectation: string | undefined
   lines.push(...busLines(summary.buses ?? []));
   lines.push(...activityLines(summary.activity), ...statesLines(summary.states));
   if (summary.stopped !== undefined && isTold(summary)) {
-    lines.push(`stopped at cycle ${count(summary.stopped.cycle)}: ${summary.stopped.reason}`);
+    lines.push(`stopped at cycle ${figure(summary.stopped.cycle)}: ${summary.stopped.reason}`);
   }
   for (const note of summary.notes) lines.push(`note: ${note}`);
   if (expectation !== undefined) lines.push(verdict(summary, expectation));
@@ -91,8 +92,8 @@ function signatureLines({ signature, expectedSignature }: RunSummary): string[] 
 }
 
 function repetitionText({ leadIn, period }: NonNullable<RunSummary['repetition']>): string {
-  if (period === 1) return `the state stands still from cycle ${count(leadIn)} on`;
-  return `states repeat every ${count(period)} cycles, from cycle ${count(leadIn)} on`;
+  if (period === 1) return `the state stands still from cycle ${figure(leadIn)} on`;
+  return `states repeat every ${figure(period)} cycles, from cycle ${figure(leadIn)} on`;
 }
 
 function busLines(buses: readonly BusEvent[]): string[] {
@@ -104,7 +105,7 @@ function busLines(buses: readonly BusEvent[]): string[] {
 function verdict({ mismatch, mismatches }: RunSummary, expectation: string): string {
   if (mismatch === undefined) return `as expected by ${expectation}`;
   if (mismatches !== undefined && mismatches > 1) {
-    return `${count(mismatches)} departures from ${expectation}, the first at cycle ${mismatch.cycle}`;
+    return `${figure(mismatches)} departures from ${expectation}, the first at cycle ${mismatch.cycle}`;
   }
   return `departs from ${expectation} at cycle ${mismatch.cycle}`;
 }
@@ -114,9 +115,6 @@ function unknownText(names: readonly string[]): string {
   const rest = names.length > SHOWN ? `, and ${names.length - SHOWN} more` : '';
   return `${names.length} still unknown: ${names.slice(0, SHOWN).join(', ')}${rest}`;
 }
-
-/** A count with its thousands apart: 3,000,000. */
-export const count = (value: number): string => value.toLocaleString('en-US');
 
 /** A rate in words that fit its size. */
 export function rateText(perSecond: number): string {

@@ -1,4 +1,5 @@
 import { WholeFile } from '../../runtime/node/wholeFile.js';
+import { figure } from '../report/figures.js';
 import type {
   Findings,
   Outlet,
@@ -94,7 +95,6 @@ class StatesOutlet implements Outlet {
 }
 
 function tooMany(register: string, followedTo: number): string {
-  const figure = (value: number): string => value.toLocaleString('en-US');
   return (
     `${register} has more than ${figure(MOST_STATES)} states or ${figure(MOST_TRANSITIONS)} ` +
     `transitions: it was followed up to cycle ${figure(followedTo)}; choose fewer of its bits, as ` +

@@ -1,3 +1,4 @@
+import { counted, figure } from '../report/figures.js';
 import type { StatesSummary } from '../run/outlets/statesSummary.js';
 
 /**
@@ -37,8 +38,3 @@ function cluster({ register, states, transitions }: StatesSummary, prefix: strin
 }
 
 const text = (content: string): string => `"${content.replace(/["\\]/g, '\\$&')}"`;
-
-const figure = (value: number): string => value.toLocaleString('en-US');
-
-const counted = (count: number, what: string): string =>
-  `${figure(count)} ${what}${count === 1 ? '' : 's'}`;

@@ -1,4 +1,5 @@
-import { escaped, figure, round, tickStep } from '../../waveform/picture/svgText.js';
+import { figure } from '../../report/figures.js';
+import { escaped, round, tickStep } from '../../waveform/picture/svgText.js';
 import type { ActivityGroup } from '../activityGroups.js';
 import { STYLE } from './style.js';
 

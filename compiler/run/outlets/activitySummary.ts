@@ -1,3 +1,5 @@
+import { figure } from '../../report/figures.js';
+
 /** What the nets of a circuit did in a run, in short; clocks are left out. */
 export interface ActivitySummary {
   /** Cycles counted. */
@@ -20,8 +22,6 @@ export interface ActivitySummary {
     readonly toggles: number;
   }[];
 }
-
-const figure = (value: number): string => value.toLocaleString('en-US');
 
 /** An activity as lines of text. */
 export function activityLines(activity: ActivitySummary | undefined): string[] {

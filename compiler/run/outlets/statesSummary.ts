@@ -1,3 +1,5 @@
+import { counted, figure } from '../../report/figures.js';
+
 /** What a register vector has been in a run: its states, and how it went from one to another. */
 export interface StatesSummary {
   /** As it was asked for: a signal by its hierarchical name, or several as `{a, b}`. */
@@ -30,8 +32,6 @@ export interface TransitionSummary {
 /** States, and next states of one, that are written out. */
 const MOST_LINES = 40;
 const MOST_NEXT = 6;
-
-const figure = (value: number): string => value.toLocaleString('en-US');
 
 /** The states of registers as lines of text. */
 export function statesLines(registers: readonly StatesSummary[] = []): string[] {
@@ -75,6 +75,3 @@ function aligned(rows: readonly (readonly string[])[]): string[] {
     return `  ${cells.join('  ')}`.trimEnd();
   });
 }
-
-const counted = (count: number, what: string): string =>
-  `${figure(count)} ${what}${count === 1 ? '' : 's'}`;

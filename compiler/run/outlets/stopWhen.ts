@@ -1,3 +1,4 @@
+import { figure } from '../../report/figures.js';
 import type {
   Findings,
   Outlet,
@@ -115,7 +116,7 @@ class StopOutlet implements Outlet {
       return isOurs ? { notes: [`look around with: ${lookAround(stopped.cycle)}`] } : {};
     }
     const told = this.#conditions.map(({ text }, i) => `${text} ${timesText(this.#counts[i]!)}`);
-    return { notes: told.map((text) => `${text} in ${cycles.toLocaleString('en-US')} cycles`) };
+    return { notes: told.map((text) => `${text} in ${figure(cycles)} cycles`) };
   }
 
   discard(): void {
@@ -135,12 +136,10 @@ class StopOutlet implements Outlet {
   #stopAt(cycle: number, met: number): Stop {
     const { text } = this.#conditions[met]!;
     const { after } = this.#options;
-    const reason = after === 1 ? `${text} holds` : `occurrence ${count(after)} of ${text}`;
+    const reason = after === 1 ? `${text} holds` : `occurrence ${figure(after)} of ${text}`;
     return { lastCycle: cycle, reason, condition: text };
   }
 }
 
 const timesText = (times: number): string =>
-  times === 0 ? 'never held' : times === 1 ? 'occurred once' : `occurred ${count(times)} times`;
-
-const count = (value: number): string => value.toLocaleString('en-US');
+  times === 0 ? 'never held' : times === 1 ? 'occurred once' : `occurred ${figure(times)} times`;

@@ -1,6 +1,6 @@
+import { counted, figure } from '../../report/figures.js';
 import type { Step } from '../memberCourse.js';
 import type { SettleReport } from '../settleReport.js';
-import { counted, figure } from '../text/figures.js';
 import { type CycleScale, countTicks, cycleScale } from './scales.js';
 import { STYLE } from './style.js';
 

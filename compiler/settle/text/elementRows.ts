@@ -1,5 +1,5 @@
+import { figure } from '../../report/figures.js';
 import type { ElementReport, Witness } from '../settleReport.js';
-import { figure } from './figures.js';
 import { type FoldedName, foldNames } from './foldNames.js';
 import { grouped } from './grouped.js';
 import type { Row } from './tableLines.js';

@@ -1,7 +1,7 @@
+import { counted, figure } from '../../report/figures.js';
 import type { Continuation } from '../repetition.js';
 import type { CourseReport, ElementReport, SettleReport, Verdict } from '../settleReport.js';
 import { rowOfNames, rowsByCycle, witnessRows } from './elementRows.js';
-import { counted, figure } from './figures.js';
 import { type Row, tableLines } from './tableLines.js';
 
 const WIDTH = 80;

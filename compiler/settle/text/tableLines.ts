@@ -1,4 +1,4 @@
-import { figure } from './figures.js';
+import { figure } from '../../report/figures.js';
 
 /** Words of a table, and how many bits they tell of. */
 export interface Cell {

@@ -1,5 +1,6 @@
+import { figure } from '../../report/figures.js';
 import type { StatesSummary } from '../../run/outlets/statesSummary.js';
-import { escaped, figure, round } from '../../waveform/picture/svgText.js';
+import { escaped, round } from '../../waveform/picture/svgText.js';
 import { statesGraph } from '../statesGraph.js';
 import { STYLE } from './style.js';
 

@@ -5,9 +5,6 @@ export function tickStep(range: number, parts: number): number {
   }
 }
 
-/** A whole number with its thousands apart. */
-export const figure = (value: number): string => value.toLocaleString('en-US');
-
 /** A coordinate without digits that nobody sees. */
 export const round = (value: number): number => Math.round(value * 100) / 100;
 

@@ -1,6 +1,7 @@
+import { figure } from '../../report/figures.js';
 import type { Stretch } from './courses.js';
 import { STYLE } from './style.js';
-import { escaped, figure, round, tickStep } from './svgText.js';
+import { escaped, round, tickStep } from './svgText.js';
 
 /** What a timing diagram shows: the values of signals over some cycles, last one exclusive. */
 export interface TimingDiagram {
