@@ -10,6 +10,9 @@ import { version } from './version.js';
 /** Exit status for a request or an input that is wrong. */
 const WRONG_INPUT = 2;
 
+/** What the system says of a pipe whose reader, such as `head`, has seen enough: no failure. */
+const READER_GONE = 'EPIPE';
+
 /** The verbs by name, each loaded when it is wanted. */
 const verbs: Readonly<Record<string, () => Promise<Command>>> = {
   inspect: async () => (await import('./inspect.js')).inspectCommand(),
@@ -48,9 +51,8 @@ Example:
 
 /** Does what the command line asks for, and sets the exit status. */
 export async function main(): Promise<void> {
-  // A reader that has seen enough, such as `head`, is no failure.
   process.stdout.on('error', (error: NodeJS.ErrnoException) => {
-    if (error.code === 'EPIPE') process.exit(0);
+    if (error.code === READER_GONE) process.exit(0);
     throw error;
   });
   try {
@@ -69,6 +71,7 @@ function report(error: unknown): number {
     const place = error.place === '' ? '' : `${error.place}: `;
     say(`${place}error: cycle ${error.completed} has no result: ${error.message}`);
   } else if (isSystemError(error)) {
+    if (error.code === READER_GONE) return 0;
     say(`error: ${error.path ?? 'a file'} cannot be used: ${reason(error)}`);
   } else throw error;
   return WRONG_INPUT;

@@ -1,5 +1,6 @@
-import { readFileSync, statSync } from 'node:fs';
+import { existsSync, readFileSync, statSync } from 'node:fs';
 import { readFile, stat } from 'node:fs/promises';
+import { dirname } from 'node:path';
 import { type Command, InvalidArgumentError } from 'commander';
 import type { NetlistCache } from '../cache/netlistCache.js';
 import type { Circuit } from '../circuit/circuit.js';
@@ -149,8 +150,13 @@ function bytesIfAny(path: string): Uint8Array | undefined {
 
 /** What the operating system said, in words. */
 export function reason(error: unknown): string {
-  const code = (error as NodeJS.ErrnoException).code;
-  if (code === 'ENOENT') return 'there is no such file';
+  const { code, path } = error as NodeJS.ErrnoException;
+  const folder = dirname(path ?? '');
+  if (code === 'ENOENT') {
+    return existsSync(folder) ? 'there is no such file' : `there is no folder ${folder}`;
+  }
+  if (code === 'ENOTDIR') return `${folder} is no folder`;
+  if (code === 'EEXIST') return 'there is a file of that name';
   if (code === 'EISDIR') return 'it is a directory';
   if (code === 'EACCES') return 'access is denied';
   return error instanceof Error ? error.message : String(error);

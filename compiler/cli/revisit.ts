@@ -11,6 +11,7 @@ import { writeWave } from '../waveform/writeWave.js';
 import { timedDesign } from './clockOption.js';
 import { loadCircuit } from './netlists.js';
 import { recordedRun, refuse, refuseChanges, warnOfDamage } from './resume.js';
+import { refuseOutputs } from './run/outputFiles.js';
 import { courseOf } from './run/periodOptions.js';
 import {
   addWaveOptions,
@@ -66,6 +67,7 @@ async function revisit(dir: string, options: RevisitOptions): Promise<void> {
   if ((options.waveform ?? options.table ?? options.picture) === undefined) {
     throw new UsageError('error: say where to: --waveform, --table or --picture FILE');
   }
+  refuseOutputs(options);
   // Paths are meant where the command was given, not where the run was.
   const here = pathsOf(options);
   const { record, files, options: run } = await recordedRun(dir);

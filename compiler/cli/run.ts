@@ -26,6 +26,7 @@ import {
   expectationName,
   expectationOutlets,
 } from './run/expectationOptions.js';
+import { refuseOutputs } from './run/outputFiles.js';
 import { addPeriodOptions, courseOf, type PeriodOptions } from './run/periodOptions.js';
 import {
   addRecordOptions,
@@ -128,7 +129,8 @@ Examples:
     --expect-netlist mapped.v cells.lib
   clockstride run lock.v --stimulus boats.csv --cycles 300 --picture lock.svg
   clockstride run lock.v --random 1 --cycles 100_000_000_000 --record lock.record
-  clockstride run lock.v --random 1 --stop-when 'timer == 12 && state[3]' --stop-after 1000
+  clockstride run lock.v --random 1 --weight reset=0.001 \\
+    --stop-when 'timer == 12 && state[3]' --stop-after 1000
   clockstride run counter.v --find-period`;
 
 /** Runs what a command line says. `resumed` opens the record of a run that is gone on with. */
@@ -230,7 +232,9 @@ function recordOf(
   return startRecord(options.record, design, netlists, options);
 }
 
-function refuseSharing({ json, response, stimulus, expect }: RunOptions): void {
+function refuseSharing(options: RunOptions): void {
+  const { json, response, stimulus, expect } = options;
+  refuseOutputs(options);
   if (json && response === STANDARD) {
     throw new UsageError('error: --json and --response - both want standard output');
   }

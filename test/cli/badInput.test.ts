@@ -48,7 +48,7 @@ describe('a wrong input', () => {
     [
       'a response in no folder',
       [...held.slice(0, 4), '--cycles', '1', '--response', 'a/b'],
-      'error: ',
+      'error: a/b cannot be used: there is no folder a\n',
     ],
     ['a top that is none', [...held, '--top', 'summit'], 'sum.v:1:'],
   ])('is refused with its place and nothing else: %s', async (_, args, beginning) => {

@@ -1,10 +1,11 @@
+import { spawn } from 'node:child_process';
 import { once } from 'node:events';
 import { readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { createInterface } from 'node:readline';
 import { gunzipSync, gzipSync } from 'node:zlib';
 import { describe, expect, it } from 'vitest';
-import { type Outcome, outcomeOf, WorkFolder } from '../support/command.js';
+import { command, type Outcome, outcomeOf, WorkFolder } from '../support/command.js';
 import { accumulator } from './netlists.js';
 
 const folder = new WorkFolder({ 'sum.v': accumulator });
@@ -80,6 +81,18 @@ describe('run with standard input and output', () => {
     expect(first.toString()).toMatch(/^cycle,total,even\n/);
     const [status] = await once(started, 'exit');
     expect(status).toBe(0);
+  });
+
+  it('is content where nobody reads a table of nets to its end', async () => {
+    const args = '--random 1 --cycles 100_000 --table /dev/stdout --engine bytecode';
+    const pipe = `"${process.execPath}" "${command}" run sum.v ${args} | head -n 1`;
+    const shell = spawn('sh', ['-c', pipe], {
+      cwd: folder.path,
+      stdio: ['ignore', 'pipe', 'pipe'],
+    });
+    const { stdout, stderr } = await outcomeOf(shell);
+    expect(stdout).toMatch(/^cycle,clk,.*\n$/);
+    expect(stderr).toBe('');
   });
 
   it('still tells whether all was as expected where nobody reads the response', async () => {

@@ -7,7 +7,8 @@ import { text } from 'node:stream/consumers';
 import { fileURLToPath } from 'node:url';
 import { afterAll } from 'vitest';
 
-const command = fileURLToPath(new URL('../../dist/compiler/cli/main.js', import.meta.url));
+/** The built command. */
+export const command = fileURLToPath(new URL('../../dist/compiler/cli/main.js', import.meta.url));
 
 /** Where the commands of one test file keep what they have compiled, on systems that know XDG. */
 export const cacheHome = mkdtempSync(join(tmpdir(), 'clockstride-cache-'));

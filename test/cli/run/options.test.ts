@@ -1,9 +1,14 @@
+import { mkdirSync, readFileSync } from 'node:fs';
+import { dirname } from 'node:path';
+import { fileURLToPath } from 'node:url';
 import { describe, expect, it } from 'vitest';
+import { reason } from '../../../compiler/cli/netlists.js';
 import {
   type ExpectationContext,
   expectationName,
   expectationOutlets,
 } from '../../../compiler/cli/run/expectationOptions.js';
+import { refuseOutputs } from '../../../compiler/cli/run/outputFiles.js';
 import { responseOutlets } from '../../../compiler/cli/run/responseOptions.js';
 import { stimulusOf } from '../../../compiler/cli/run/stimulusOptions.js';
 import { UsageError } from '../../../compiler/cli/usageError.js';
@@ -68,5 +73,44 @@ describe('options that do not fit together', () => {
     expect(expectationName({})).toBeUndefined();
     const all = { expect: 'a.csv', expectModel: 'm.mjs', expectNetlist: ['b.v', 'c.lib'] };
     expect(expectationName(all)).toBe('a.csv and m.mjs and b.v c.lib');
+  });
+});
+
+describe('files to be written', () => {
+  it.each([
+    ['--table - : it goes to a file, not to standard output; name one', { table: '-' }],
+    ['--activity-picture - : it goes to a file', { activityPicture: '-' }],
+    [
+      '--response and --activity both write ./a.csv; name two files',
+      { response: 'a.csv', activity: './a.csv' },
+    ],
+    ['--states-table and --states-graph both write s', { statesTable: 's', statesGraph: 's' }],
+  ])('are refused: %s', async (message, options) => {
+    expect(await refused(() => refuseOutputs(options))).toContain(`error: ${message}`);
+  });
+
+  it('may be several, standard output for the response, or a device that takes what comes', () => {
+    refuseOutputs({ response: '-', table: 'a.csv', picture: 'a.svg' });
+    refuseOutputs({ response: '/dev/null', table: '/dev/null' });
+  });
+});
+
+describe('what the system says of a path', () => {
+  const own = fileURLToPath(import.meta.url);
+  const folder = dirname(own);
+  it.each([
+    [`there is no folder ${folder}/none`, () => readFileSync(`${folder}/none/a`)],
+    ['there is no such file', () => readFileSync(`${folder}/none`)],
+    [`${own} is no folder`, () => readFileSync(`${own}/a`)],
+    ['there is a file of that name', () => mkdirSync(own)],
+    ['it is a directory', () => readFileSync(folder)],
+  ])('is told in words: %s', (words, action) => {
+    let thrown: unknown;
+    try {
+      action();
+    } catch (error) {
+      thrown = error;
+    }
+    expect(reason(thrown)).toBe(words);
   });
 });
