@@ -91,6 +91,19 @@ describe('run --stop-when', () => {
     ]);
   });
 
+  it('tells that a condition was not met where something else ends the run', async () => {
+    const args = ['prbs.v', '--find-period', '--stop-when', 'state == 0', '--json'];
+    const { status, stdout } = await folder.run('run', ...args);
+    expect(status).toBe(0);
+    expect(summaryOf(stdout).notes.at(-1)).toMatch(/^state == 0 never held in \d+ cycles$/);
+    // A departure cuts what has been looked at, so nothing is said of it.
+    folder.write('wrong.csv', 'cycle,state\n3,0\n');
+    const judged = ['prbs.v', '--expect', 'wrong.csv', '--stop-when', 'state == 0', '--json'];
+    const departed = await folder.run('run', ...judged);
+    expect(departed.status).toBe(1);
+    expect(summaryOf(departed.stdout)).toMatchObject({ cycles: 4, notes: [] });
+  });
+
   it('refuses what it cannot read, at its place', async () => {
     const { status, stdout, stderr } = await folder.run('run', 'box.v', '--stop-when', 'n == m');
     expect({ status, stdout }).toEqual({ status: 2, stdout: '' });
@@ -136,5 +149,18 @@ describe('a recorded run with --stop-when', () => {
       `${stops[5]! + 1}`,
     );
     expect(summaryOf(second.stdout).signature).toBe(summaryOf(whole.stdout).signature);
+  });
+
+  it('does not say of a condition that it never held where it is gone past', async () => {
+    const [first] = statesOf((state) => state === 5, 511);
+    const args = ['prbs.v', '--stop-when', 'state == 5', '--cycles', `${first! + 20}`];
+    await folder.run('run', ...args, '--record', 'once', '--response', 'once.csv');
+    const { status, stdout } = await folder.run('resume', 'once', '--json');
+    expect(status).toBe(0);
+    expect(summaryOf(stdout).notes).toEqual([
+      `state == 5 did not occur after cycle ${first}, in ${first! + 20} cycles`,
+    ]);
+    await folder.run('run', 'prbs.v', '--cycles', `${first! + 20}`, '--response', 'whole.csv');
+    expect(folder.read('once.csv')).toBe(folder.read('whole.csv'));
   });
 });

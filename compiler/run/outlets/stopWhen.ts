@@ -67,6 +67,8 @@ class StopOutlet implements Outlet {
   readonly #counts: number[];
   readonly #past: number;
   #holding: number;
+  /** Cycles looked at, those before a checkpoint included. */
+  #taken = 0;
 
   constructor(
     conditions: readonly StopCondition[],
@@ -93,6 +95,7 @@ class StopOutlet implements Outlet {
   take({ firstCycle, cycles, watched }: OutletBlock): Stop | undefined {
     const { flagWord, flagBit, stride } = this.#place;
     const mask = this.#mask;
+    this.#taken = firstCycle + cycles;
     let holding = this.#holding;
     for (let row = 0, at = flagWord; row < cycles; row++, at += stride) {
       const now = (watched[at]! >>> flagBit) & mask;
@@ -110,13 +113,15 @@ class StopOutlet implements Outlet {
   }
 
   finish({ cycles, stopped }: RunEnd): Findings {
-    if (stopped !== undefined) {
+    if (stopped?.condition !== undefined) {
       const { lookAround } = this.#options;
-      const isOurs = stopped.condition !== undefined && lookAround !== undefined;
-      return isOurs ? { notes: [`look around with: ${lookAround(stopped.cycle)}`] } : {};
+      return lookAround ? { notes: [`look around with: ${lookAround(stopped.cycle)}`] } : {};
     }
-    const told = this.#conditions.map(({ text }, i) => `${text} ${timesText(this.#counts[i]!)}`);
-    return { notes: told.map((text) => `${text} in ${figure(cycles)} cycles`) };
+    // One that judges has cut the block, of which all has been counted.
+    if (cycles < this.#taken) return {};
+    const past = this.#past < 0 ? '' : `after cycle ${figure(this.#past)}, `;
+    const told = this.#conditions.map(({ text }, i) => `${text} ${this.#times(i)}`);
+    return { notes: told.map((text) => `${text} ${past}in ${figure(cycles)} cycles`) };
   }
 
   discard(): void {
@@ -133,6 +138,13 @@ class StopOutlet implements Outlet {
     return met;
   }
 
+  #times(condition: number): string {
+    const times = this.#counts[condition]!;
+    if (times > 0) return times === 1 ? 'occurred once' : `occurred ${figure(times)} times`;
+    // Before a stop that is passed over it has, or another one.
+    return this.#past < 0 ? 'never held' : 'did not occur';
+  }
+
   #stopAt(cycle: number, met: number): Stop {
     const { text } = this.#conditions[met]!;
     const { after } = this.#options;
@@ -140,6 +152,3 @@ class StopOutlet implements Outlet {
     return { lastCycle: cycle, reason, condition: text };
   }
 }
-
-const timesText = (times: number): string =>
-  times === 0 ? 'never held' : times === 1 ? 'occurred once' : `occurred ${figure(times)} times`;
