@@ -170,7 +170,8 @@ export class StateCourse {
     const known = this.#numbers.get(key);
     if (known !== undefined) return known;
     const state = this.#keys.length;
-    if (state === MOST_STATES) return -1;
+    // A new state is reached by a new transition.
+    if (state === MOST_STATES || this.#from.length === MOST_TRANSITIONS) return -1;
     this.#numbers.set(key, state);
     this.#keys.push(key);
     this.#values.push(this.#text(rows, at));

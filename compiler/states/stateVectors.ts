@@ -22,7 +22,10 @@ export interface StateVector {
 export function stateVectors(circuit: Circuit, texts: readonly string[]): StateVector[] {
   const found = texts.flatMap((text): StateVector[] => {
     const [, inside] = /^\s*\{(.*)\}\s*$/s.exec(text) ?? [];
-    if (inside === undefined) return eachOf(circuit, text);
+    if (inside === undefined) {
+      if (/^\s*\{/.test(text)) throw new UnmatchedPattern(`${text}: the } is missing`);
+      return eachOf(circuit, text);
+    }
     const patterns = inside.split(',').map((part) => part.trim());
     if (patterns.includes('')) throw new UnmatchedPattern(`${text}: a name is missing`);
     const parts = patterns.flatMap((pattern) => eachOf(circuit, pattern));

@@ -14,6 +14,7 @@ import { type RunRequest, runDesign } from '../../compiler/run/runDesign.js';
 import type { RunRecorder, RunStart } from '../../compiler/run/runRecorder.js';
 import { followStates } from '../../compiler/states/followStates.js';
 import { statesPicture } from '../../compiler/states/picture/statesPicture.js';
+import { StateCourse } from '../../compiler/states/stateCourse.js';
 import { statesGraph } from '../../compiler/states/statesGraph.js';
 import { statesTable } from '../../compiler/states/statesTable.js';
 import { stateVectors } from '../../compiler/states/stateVectors.js';
@@ -205,6 +206,31 @@ describe('states', () => {
     const svg = await statesPicture('wide', 6000, states!);
     expect(svg.match(/class="node state/g)).toHaveLength(120);
     expect(svg).toContain('the first ones of more than can be drawn');
+  });
+
+  it('beyond the transitions that are kept are not told of', () => {
+    // All 65,536 pairs of 256 states (the sequence of de Bruijn, 1946), then one more state.
+    const rows: number[] = [];
+    for (let i = 0; i < 256; i++) {
+      rows.push(i);
+      for (let j = i + 1; j < 256; j++) rows.push(i, j);
+    }
+    rows.push(0, 256);
+    const place = { firstWord: 0, flagWord: 0, flagBit: 0, stride: 1, toUnknown: undefined };
+    const stateCourse = new StateCourse('n', 0, 9, place);
+    const watched = Uint32Array.from(rows);
+    const none = { rows: watched, stimulus: watched, stimulusStride: 0 };
+    stateCourse.take({ firstCycle: 0, cycles: rows.length, watched, ...none });
+    const { states, transitions, followedTo } = stateCourse.summary();
+    expect(followedTo).toBe(65_536);
+    expect([states.length, transitions.length]).toEqual([256, 65_536]);
+    expect(states.reduce((sum, { cycles }) => sum + cycles, 0)).toBe(65_537);
+  });
+
+  it('joined in braces want both of them', () => {
+    expect(() => stateVectors(pump.circuit, ['{on, phase'])).toThrow(
+      '{on, phase: the } is missing',
+    );
   });
 
   it('are what the reference sees, in any circuit', () =>
