@@ -1,4 +1,6 @@
+import { readFileSync } from 'node:fs';
 import { join } from 'node:path';
+import { gzipSync } from 'node:zlib';
 import fc from 'fast-check';
 import { beforeAll, describe, expect, it } from 'vitest';
 import { designOf } from '../../compiler/compile.js';
@@ -42,6 +44,10 @@ beforeAll(async () => {
 });
 
 describe('a package of many lanes', () => {
+  it('has a runtime below 14 kB', () => {
+    expect(gzipSync(readFileSync(join(root, 'many', 'model.mjs'))).length).toBeLessThan(14_000);
+  });
+
   it('does in each lane what a package of one sequence does', async () => {
     const lanes = await many.load(undefined, { powerUp: 'random', seed: 7 });
     const random = fc.sample(fc.nat(255), { seed: SEED, numRuns: 64 * 40 });

@@ -8,6 +8,9 @@ import {
   savedStateType,
 } from './shared.js';
 
+const ENDED =
+  '; undefined for one that has ended and, where it would be read, has no result with its inputs';
+
 /**
  * The declarations of a model of many sequences, whatever its ports are. `mayEnd` says whether a
  * cycle may have no result, so that a lane ends.
@@ -31,7 +34,7 @@ export interface Reached {
 }
 
 ${savedStateType}
-/** A value for each lane${mayEnd ? '; undefined for one that has ended' : ''}. */
+/** A value for each lane${mayEnd ? ENDED : ''}. */
 export type EachLane<Value> = readonly ${mayEnd ? '(Value | undefined)' : 'Value'}[];
 
 /** A lane that has ended because a cycle has no result, such as a loop that never settles. */
