@@ -102,8 +102,8 @@ function plainPrograms(
   // Cycles of several kinds work on the same state bits: none of them may move or turn any.
   const areSeveral = cycles.length > 1 || observes;
   const programs = cycles.map((cycle) => {
-    const whole = swept(compacted(cycle, passes, areSeveral), passes, areSeveral);
-    return plainProgram(areSeveral ? whole : grouped(whole, passes), passes, areSeveral);
+    const logic = swept(compacted(cycle, passes, areSeveral), passes, areSeveral);
+    return plainProgram(areSeveral ? logic : grouped(logic, passes), passes, areSeveral);
   });
   return { programs, ...rest };
 }

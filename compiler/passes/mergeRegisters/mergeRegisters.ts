@@ -24,7 +24,8 @@ export interface Merged {
  * Bits that behave alike in a random simulation are assumed to be equal, the graph is built under
  * that assumption, and classes whose next values differ are split, until none is: an induction over
  * the cycles (C. van Eijk, "Sequential equivalence checking without state space traversal", DATE
- * 1998, with structural hashing as the proof). The result holds for runs from that state only.
+ * 1998, with structural hashing and windows as the proof). The result holds for runs from that state
+ * only. A graph with memories is left as it is.
  */
 export function mergeRegisters(
   logic: Logic,

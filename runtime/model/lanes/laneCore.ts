@@ -19,12 +19,12 @@ export class LaneCore {
   readonly lanes: number;
   readonly inputStride: number;
   readonly outputStride: number;
+  /** For lane rows of the inputs. */
+  readonly into: LaneRows;
   /** For lane rows of the outputs. */
   readonly out: LaneRows;
   readonly #engine: LaneEngine;
   readonly #probes: ModelEngine | undefined;
-  /** For lane rows of the inputs. */
-  readonly into: LaneRows;
   /** Packed rows, which are never written to again. */
   #inputs: readonly Uint32Array[];
   #before: readonly (Uint32Array | undefined)[] = [];
@@ -85,6 +85,7 @@ export class LaneCore {
     return this.#engine.faults.map(({ lane, cycle }) => [lane, cycle]);
   }
 
+  /** Cycles since power-up as a lane counts them; of one that has ended, those with a result. */
   cycleOf(lane: number): number {
     const fault = this.#engine.faults.find((found) => found.lane === lane);
     return (fault?.cycle ?? this.#engine.cycles) + this.#ahead[lane]!;
