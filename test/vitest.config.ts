@@ -5,6 +5,8 @@ export default defineConfig({
     root: new URL('..', import.meta.url).pathname,
     include: ['test/**/*.test.ts'],
     globalSetup: ['test/support/build.ts'],
+    // Files of one worker share what they import: loading it for each took half of the time.
+    isolate: false,
     // Two slow cores compile WebAssembly and run interpreters side by side.
     testTimeout: 120_000,
     hookTimeout: 120_000,

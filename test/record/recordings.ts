@@ -1,7 +1,6 @@
-import { mkdtempSync, rmSync } from 'node:fs';
+import { mkdtempSync } from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
-import { afterAll } from 'vitest';
 import type { Design } from '../../compiler/compile.js';
 import { manifestOf } from '../../compiler/record/manifest.js';
 import { FolderFiles, type RecordFiles } from '../../compiler/record/recordFiles.js';
@@ -14,11 +13,10 @@ import { skipCycles } from '../../runtime/skipCycles.js';
 import { randomStimulus } from '../../runtime/stream.js';
 
 const root = mkdtempSync(join(tmpdir(), 'clockstride-records-'));
-afterAll(() => rmSync(root, { recursive: true }));
 
 let made = 0;
 
-/** A path that nothing stands at yet, gone after the tests. */
+/** A path that nothing stands at yet. */
 export const freshPath = (): string => join(root, `${made++}`);
 
 /** A record in a folder of its own, or in the files given. */

@@ -1,5 +1,7 @@
 import { execFile } from 'node:child_process';
-import { existsSync, mkdirSync, rmSync } from 'node:fs';
+import { existsSync, mkdirSync, mkdtempSync, rmSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { promisify } from 'node:util';
 import type { TestProject } from 'vitest/node';
@@ -14,11 +16,14 @@ declare module 'vitest' {
 const pathOf = (path: string) => fileURLToPath(new URL(`../../${path}`, import.meta.url));
 
 /**
- * Builds `dist/` once before all tests, so that what they start is what the sources say.
+ * Builds `dist/` once before all tests, so that what they start is what the sources say. Gives them
+ * a folder for temporary files and takes it away when all is over.
  *
  * A failure is handed to the one test that asks for it, so that it fails no other.
  */
-export default async function build({ provide }: TestProject): Promise<void> {
+export default async function build({ provide }: TestProject): Promise<() => void> {
+  const temporary = mkdtempSync(join(tmpdir(), 'clockstride-tests-'));
+  process.env.TMPDIR = temporary;
   const cache = pathOf('node_modules/.cache/');
   const memory = `${cache}clockstride.tsbuildinfo`;
   mkdirSync(cache, { recursive: true });
@@ -36,4 +41,5 @@ export default async function build({ provide }: TestProject): Promise<void> {
     const { stdout, message } = error as { stdout?: string; message: string };
     provide('buildProblem', stdout || message);
   }
+  return () => rmSync(temporary, { recursive: true, force: true });
 }

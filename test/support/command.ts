@@ -10,9 +10,8 @@ import { afterAll } from 'vitest';
 /** The built command. */
 export const command = fileURLToPath(new URL('../../dist/compiler/cli/main.js', import.meta.url));
 
-/** Where the commands of one test file keep what they have compiled, on systems that know XDG. */
+/** Where commands keep what they have compiled, on systems that know XDG. */
 export const cacheHome = mkdtempSync(join(tmpdir(), 'clockstride-cache-'));
-afterAll(() => rmSync(cacheHome, { recursive: true }));
 
 const environment = { ...process.env, XDG_CACHE_HOME: cacheHome };
 
