@@ -1,3 +1,4 @@
+import { availableParallelism } from 'node:os';
 import { defineConfig } from 'vitest/config';
 
 export default defineConfig({
@@ -7,7 +8,9 @@ export default defineConfig({
     globalSetup: ['test/support/build.ts'],
     // Files of one worker share what they import: loading it for each took half of the time.
     isolate: false,
-    // Two slow cores compile WebAssembly and run interpreters side by side.
+    // Also on two cores, where vitest would use one.
+    maxWorkers: Math.max(2, availableParallelism() - 1),
+    // Slow cores compile WebAssembly and run interpreters side by side.
     testTimeout: 120_000,
     hookTimeout: 120_000,
   },

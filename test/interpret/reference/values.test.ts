@@ -7,8 +7,8 @@ import { smallCircuit } from '../../support/smallCircuit.js';
 
 const VALUES = ['0', '1', 'x'];
 
-// IEEE 1364-2005, 7.2 (and, nand, or, nor, xor, xnor) and 7.3 (buf, not); rows are the first
-// input, columns the second, both in the order 0, 1, x. The z row and column equal those of x.
+// IEEE 1364-2005, 7.2 (and, nand, or, nor, xor, xnor), 7.3 (buf, not) and 5.1.8 (===); rows are the
+// first input, columns the second, both in the order 0, 1, x. Row and column of z equal those of x.
 const TWO_INPUT_TABLES: Record<string, string[]> = {
   and: ['000', '01x', '0xx'],
   nand: ['111', '10x', '1xx'],
@@ -16,6 +16,7 @@ const TWO_INPUT_TABLES: Record<string, string[]> = {
   nor: ['10x', '000', 'x0x'],
   xor: ['01x', '10x', 'xxx'],
   xnor: ['10x', '01x', 'xxx'],
+  caseEqual: ['100', '010', '001'],
 };
 const ONE_INPUT_TABLES: Record<string, string> = { buf: '01x', not: '10x' };
 
