@@ -54,8 +54,8 @@ The run goes again from the nearest checkpoint before the window. A run of which
 period is known (--find-period) can be revisited at any later cycle. Values are those
 which nets have when the outputs are sampled, x included where the run had three values.
 
-Exit status: 0 the window is written, 1 it ends early at a cycle without result, 2 the
-record, an input or the request is wrong.
+Exit status: 0 the window is written, 1 it ends early at a cycle without result or was
+interrupted, 2 the record, an input or the request is wrong.
 
 Examples:
   clockstride revisit lock.record --from 1_000_000 --to 1_000_040 --picture lock.svg
@@ -93,7 +93,9 @@ async function revisit(dir: string, options: RevisitOptions): Promise<void> {
       stimulus: async (from) => (await courseOf(design, run, { from })).stimulus,
       outlets: () => waves.map(({ path, form, list }) => writeWave(path, form, list, shown, shift)),
     });
-    report(options, seen, { dir, start: start.cycle + shift, waves, circuit: circuit.name });
+    const isInterrupted = interrupt.signal.aborted && seen.shown <= window.to - window.from;
+    const moment = { start: start.cycle + shift, isInterrupted };
+    report(options, seen, { dir, ...moment, waves, circuit: circuit.name });
   } finally {
     await emitter.close();
   }
@@ -130,21 +132,29 @@ interface Told {
   readonly circuit: string;
   /** The cycle of the checkpoint, as the window counts. */
   readonly start: number;
+  /** Whether the user has ended it before its last cycle. */
+  readonly isInterrupted: boolean;
   readonly waves: readonly ChosenWave[];
 }
 
 function report(options: RevisitOptions, seen: Revisited, told: Told): void {
   const { from } = options;
   const { shown, engine, fault } = seen;
+  if (fault !== undefined || told.isInterrupted) process.exitCode = 1;
   if (shown === 0) {
-    throw new UsageError(`error: ${told.dir}: the run ends before cycle ${figure(from)}`);
+    if (!told.isInterrupted) {
+      throw new UsageError(`error: ${told.dir}: the run ends before cycle ${figure(from)}`);
+    }
+    process.stderr.write(`interrupted before cycle ${figure(from)}; nothing is written\n`);
+    return;
   }
-  if (fault !== undefined) process.exitCode = 1;
   if (options.json) {
     const waves = told.waves.map(({ path, list }) => ({ file: path, signals: list.count }));
     const faults = fault && { fault: { cycle: from + shown, message: fault.message } };
     const { start: checkpoint } = told;
-    const summary = { from, to: from + shown - 1, checkpoint, engine, waves, ...faults };
+    const interrupted = told.isInterrupted && { interrupted: true };
+    const to = from + shown - 1;
+    const summary = { from, to, checkpoint, engine, waves, ...faults, ...interrupted };
     process.stdout.write(`${JSON.stringify(summary, null, 2)}\n`);
     return;
   }
@@ -158,7 +168,8 @@ function report(options: RevisitOptions, seen: Revisited, told: Told): void {
   );
   if (fault !== undefined) {
     lines.push(`cycle ${figure(from + shown)} has no result: ${fault.message}`);
-  } else if (from + shown - 1 < options.to) lines.push('the run ends there');
+  } else if (told.isInterrupted) lines.push('interrupted there');
+  else if (from + shown - 1 < options.to) lines.push('the run ends there');
   process.stdout.write(`${lines.join('\n')}\n`);
 }
 

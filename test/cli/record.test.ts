@@ -168,6 +168,22 @@ describe('revisit', () => {
     expect(values(late)).toEqual(values(near));
   });
 
+  it('shows what it has come to where it is interrupted, and says so', async () => {
+    const run = ['run', 'prbs.v', '--find-period', '--engine', 'bytecode', '--record', 'endless'];
+    await folder.run(...run);
+    const window = ['--from', '0', '--to', '100_000_000', '--nets', 'serial'];
+    const started = folder.start('revisit', 'endless', ...window, '--table', 'long.csv');
+    const isOpen = () => folder.names().some((name) => name.startsWith('.long.csv.'));
+    while (!isOpen() && started.exitCode === null) await setTimeout(5);
+    started.kill('SIGINT');
+    const { status, stdout } = await outcomeOf(started);
+    expect(status).toBe(1);
+    expect(stdout).toMatch(/\ninterrupted there\n$/);
+    const rows = folder.read('long.csv').trimEnd().split('\n');
+    const [, last] = /cycles 0 to ([\d,]+)/.exec(stdout)!;
+    expect(rows.at(-1)).toMatch(new RegExp(`^${last!.replaceAll(',', '')},`));
+  });
+
   it('shows what leads to a cycle without result', async () => {
     const ran = await folder.run('run', 'ring.v', '--cycles', '99', '--record', 'rings');
     expect(ran.stderr).toContain('cycle 4 has no result');
