@@ -6,14 +6,16 @@ import { quoted } from '../waveform/quoted.js';
  * empty and the count is that of its cycles, and behind it one for each transition from it.
  */
 export function statesTable(registers: readonly StatesSummary[]): string {
-  const rows = registers.flatMap(({ register, states, transitions }) =>
-    states.flatMap(({ value, cycles, first }) => [
-      [register, value, '', cycles, first],
-      ...transitions
-        .filter(({ from }) => from === value)
-        .map(({ to, count, first: taken }) => [register, value, to, count, taken]),
-    ]),
-  );
+  const rows = registers.flatMap(({ register, states, transitions }) => {
+    const blocks = new Map(
+      states.map(({ value, cycles, first }) => [value, [[register, value, '', cycles, first]]]),
+    );
+    // Not looked for state by state: there may be many of both.
+    for (const { from, to, count, first } of transitions) {
+      blocks.get(from)!.push([register, from, to, count, first]);
+    }
+    return [...blocks.values()].flat();
+  });
   const lines = rows.map((row) => `${row.map((field) => quoted(String(field))).join(',')}\n`);
   return `register,state,next,count,first_cycle\n${lines.join('')}`;
 }
