@@ -1,4 +1,4 @@
-import { declaredIndex } from '../circuit/hierarchy.js';
+import { indexText } from '../circuit/hierarchy.js';
 import { ByteText } from '../waveform/byteText.js';
 import { quoted } from '../waveform/quoted.js';
 import { signalAt, signalPath } from '../waveform/signalList.js';
@@ -17,7 +17,7 @@ export function* activityTable(activity: NetActivity): Generator<Uint8Array, voi
     const signal = signalAt(hierarchy, list.scope[entry]!, list.signal[entry]!);
     const path = signalPath(hierarchy, list, entry);
     for (let bit = 0; bit < list.width[entry]!; bit++) {
-      const index = signal.isVector ? `[${declaredIndex(signal, list.low[entry]! + bit)}]` : '';
+      const index = indexText(signal, list.low[entry]! + bit);
       const counts = activity.counts(list.place[entry]! + bit);
       const { toggles, timeAt0, timeAt1, timeAtX } = counts;
       text.text(`${quoted(path + index)},${toggles},${timeAt0},${timeAt1},${timeAtX}\n`);

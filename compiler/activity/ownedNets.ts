@@ -1,5 +1,5 @@
-import { declaredIndex, type Hierarchy } from '../circuit/hierarchy.js';
-import { type SignalList, signalAt, signalPath } from '../waveform/signalList.js';
+import { bitName, type Hierarchy } from '../circuit/hierarchy.js';
+import { type SignalList, signalAt } from '../waveform/signalList.js';
 
 /**
  * The nets of a list, each once, by the name nearest to the top: entry i of each array is about the
@@ -45,8 +45,7 @@ export function ownedName(
   const at = entry[i]!;
   const signal = signalAt(hierarchy, list.scope[at]!, list.signal[at]!);
   const bit = list.low[at]! + place[i]! - list.place[at]!;
-  const index = signal.isVector ? `[${declaredIndex(signal, bit)}]` : '';
-  return signalPath(hierarchy, list, at) + index;
+  return bitName(hierarchy, list.scope[at]!, signal, bit);
 }
 
 /** Blocks that are told apart at most. */

@@ -1,4 +1,4 @@
-import { declaredIndex } from '../circuit/hierarchy.js';
+import { indexText } from '../circuit/hierarchy.js';
 import { ByteText } from '../waveform/byteText.js';
 import { scopesOf } from '../waveform/scopeTree.js';
 import { signalAt } from '../waveform/signalList.js';
@@ -52,7 +52,7 @@ function* nets(activity: NetActivity, entry: number, indent: string, text: ByteT
   const { list, design } = activity;
   const signal = signalAt(design.circuit.hierarchy, list.scope[entry]!, list.signal[entry]!);
   for (let bit = 0; bit < list.width[entry]!; bit++) {
-    const index = signal.isVector ? `[${declaredIndex(signal, list.low[entry]! + bit)}]` : '';
+    const index = indexText(signal, list.low[entry]! + bit);
     const counts = activity.counts(list.place[entry]! + bit);
     const { toggles, timeAt0, timeAt1, timeAtX } = counts;
     text.text(

@@ -171,11 +171,15 @@ export function declaredIndex(signal: Signal, bit: number): number {
   return signal.lsb <= signal.msb ? signal.lsb + bit : signal.lsb - bit;
 }
 
+/** `[3]` for a bit of a vector counted from the right, nothing for a scalar. */
+export const indexText = (signal: Signal, bit: number): string =>
+  signal.isVector ? `[${declaredIndex(signal, bit)}]` : '';
+
 /** `a.b.q` or `a.b.q[3]` for a bit of a signal. */
 export function bitName(hierarchy: Hierarchy, scope: number, signal: Signal, bit: number): string {
   const path = scopePath(hierarchy, scope);
   const base = path === '' ? signal.name : `${path}.${signal.name}`;
-  return signal.isVector ? `${base}[${declaredIndex(signal, bit)}]` : base;
+  return base + indexText(signal, bit);
 }
 
 /**

@@ -48,8 +48,7 @@ export function addResponseOptions(command: Command): Command {
 
 /**
  * The outlets that keep a response, or what is left of it; `mark` is that of the record, if the run
- * is recorded. Throws UsageError for ports that the
- * circuit lacks, and for a file of another form.
+ * is recorded. Throws UsageError for ports that the circuit lacks, and for a file of another form.
  */
 export function responseOutlets(
   options: ResponseOptions,

@@ -66,8 +66,8 @@ export interface ChosenStimulus {
 }
 
 /**
- * The stimulus asked for, or what is left of it after `from` cycles. Throws UsageError where the length of the run is not known and where
- * options do not fit together.
+ * The stimulus asked for, or what is left of it after `from` cycles. Throws UsageError where the
+ * length of the run is not known and where options do not fit together.
  */
 export async function stimulusOf(
   design: Design,
