@@ -200,7 +200,9 @@ const shapesOf = ({ memories }: Circuit): MemoryShape[] =>
 export interface ModelOptions extends EmitOptions {
   /**
    * The state elements that the model will start with. It gets faster where registers are equal
-   * from there on, and refuses other states to be reset to, except those that follow from this one.
+   * from there on, and refuses states in which they differ. What `save` gave can be restored; a
+   * reset to a later state may be refused, since it begins anew without the inputs of the cycle
+   * before, and registers may be equal to these.
    */
   readonly start?: Uint8Array;
 }
