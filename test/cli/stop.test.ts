@@ -43,7 +43,9 @@ const summaryOf = (stdout: string) =>
 describe('run --stop-when', () => {
   it('ends with the cycle in which the condition holds, and says how to look around', async () => {
     const [first] = statesOf((state) => state === 5, 511);
+    folder.write('low.csv', 'cycle,state\n0,0x1ff\n');
     const args = ['prbs.v', '--stop-when', 'state == 5', '--response', 'seen.csv'];
+    args.push('--states', 'state[1:0]', 'serial', '--expect', 'low.csv', '--all');
     const { status, stdout, stderr } = await folder.run('run', ...args);
     expect(stderr).toBe('');
     expect(status).toBe(1);

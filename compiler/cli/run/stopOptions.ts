@@ -82,21 +82,24 @@ function lookingAround(cycle: number, record: string | undefined): string {
   return shellText(['clockstride', ...again, '--cycles', `${to + 1}`, ...window]);
 }
 
-// Options of a run that are not repeated: those with a value, and others.
+// Options of a run that are not repeated: those with a value, with several, and others.
 const VALUED: ReadonlySet<string> = new Set([
   ...['--stop-when', '--stop-after', '--cycles', '--response', '--response-form'],
   ...['--ports', '--every', '--from', '--to', '--waveform', '--table', '--picture'],
   ...['--activity', '--activity-picture', '--states-table', '--states-graph'],
+  ...['--expect', '--expect-form', '--expect-model', '--expect-top', '--expect-signature'],
 ]);
-const PLAIN: ReadonlySet<string> = new Set(['--changes', '--json', '--signature']);
+const VARIADIC: ReadonlySet<string> = new Set(['--states', '--expect-netlist']);
+const PLAIN: ReadonlySet<string> = new Set(['--changes', '--json', '--signature', '--all']);
 
 function repeatedWords(words: readonly string[]): string[] {
   const kept: string[] = [];
   for (let i = 0; i < words.length; i++) {
     const [name] = words[i]!.split('=', 1) as [string];
-    if (!VALUED.has(name) && !PLAIN.has(name)) kept.push(words[i]!);
     // Its value, where that is a word of its own.
-    else if (VALUED.has(name) && name === words[i]) i++;
+    if (VALUED.has(name)) i += name === words[i] ? 1 : 0;
+    else if (VARIADIC.has(name)) while (i + 1 < words.length && !words[i + 1]!.startsWith('-')) i++;
+    else if (!PLAIN.has(name)) kept.push(words[i]!);
   }
   return kept;
 }
