@@ -65,7 +65,7 @@ export function designOf(circuit: Circuit, options: CompileOptions = {}): Design
 // A clock that is left out would quietly become a data input.
 function refuseUntimed(circuit: Circuit, named: readonly string[]): void {
   const untimed = findClockPorts(circuit).ports.find(({ name }) => !named.includes(name));
-  if (untimed) throw new RangeError(`clock ${untimed.name} has no timing`);
+  if (untimed) throw new RangeError(`clock ${untimed.name} has no timing; give each clock one`);
 }
 
 /** What becomes of a design in the cycles of each kind, and when which of them comes. */

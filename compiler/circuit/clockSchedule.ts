@@ -97,7 +97,8 @@ export function timedSchedule(clocks: ClockPorts, timings: readonly ClockTiming[
 function timingOf(name: string, timings: readonly ClockTiming[]): ClockTiming {
   const found = timings.filter(({ port }) => port === name);
   const timing = found[0];
-  if (timing === undefined) throw new RangeError(`clock ${name} has no timing`);
+  if (timing === undefined)
+    throw new RangeError(`clock ${name} has no timing; give each clock one`);
   if (found.length > 1) throw new RangeError(`clock ${name} has ${found.length} timings`);
   const { period, offset } = timing;
   if (!Number.isSafeInteger(period) || period < 2 || period > 1e6) {

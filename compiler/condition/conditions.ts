@@ -76,7 +76,8 @@ function conditionNet(
   }
   // What a netlist is only warned of, a select of bits that are not there, never holds.
   for (const { code, severity, message, span } of found.list) {
-    diagnostics.add(severity === 'error' ? code : 'range-invalid', message, span);
+    if (severity === 'error') diagnostics.add(code, message, span);
+    else diagnostics.add('range-invalid', `${message}; mend its numbers`, span);
   }
   return net;
 }

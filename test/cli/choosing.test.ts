@@ -110,7 +110,7 @@ describe('--clock', () => {
   });
 
   it.each([
-    [['--clock', 'a=2'], 'error: --clock: clock b has no timing'],
+    [['--clock', 'a=2'], 'error: --clock: clock b has no timing; give each clock one\n'],
     [['--clock', 'a=2', '--clock', 'b=1'], 'error: --clock: the period of b must be 2'],
     [['--clock', 'a'], 'Give PORT=PERIOD or PORT=PERIOD@OFFSET'],
   ])('refuses what cannot be run: %s', async (clocks, message) => {

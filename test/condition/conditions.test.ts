@@ -194,6 +194,7 @@ describe('a condition that cannot be', () => {
     ['a == 1)', 'condition:1:7: error: expected an operator or the end of the expression'],
     ['a ==\n unit.q', 'condition:2:2: error: there is no net or memory `unit.q`'],
     ['a[4]', 'condition:1:1: error: this select is not all within [3:0]'],
+    ['a[4]', 'reads as x and is not written; mend its numbers'],
     ["a == 4'b1x00", 'condition:1:6: error: x and z can only be compared, by === and !=='],
     ["a === (b + 1'bx)", 'condition:1:12: error: x and z can only be compared'],
     ['f(a)', 'condition:1:1: error: `f` cannot be called here'],

@@ -68,7 +68,7 @@ export const Token: Readonly<Record<keyof typeof kinds, number>> = kinds;
 
 /** What the tokens that are not words look like, for messages. */
 export const tokenTexts: readonly string[] = tableOfTexts({
-  [Token.EndOfInput]: 'the end of the file',
+  [Token.EndOfInput]: 'the end of the text',
   [Token.Identifier]: 'a name',
   [Token.Number]: 'a number',
   [Token.Based]: 'a number',

@@ -62,7 +62,7 @@ describe('faults around modules', () => {
   it.each([
     [
       'module m; wire a;',
-      "1:1 'module' the module 'm' has no 'endmodule' before the end of the file",
+      "1:1 'module' the module 'm' has no 'endmodule' before the end of the text",
     ],
     [
       'module m; wire a;\nmodule n; endmodule',
@@ -78,7 +78,7 @@ describe('faults around modules', () => {
       'module m; specify (a => b) = 1; endmodule',
       "1:11 'specify' the specify block has no 'endspecify'",
     ],
-    ['module m; specparam', "1:20 '' expected ';', found the end of the file"],
+    ['module m; specparam', "1:20 '' expected ';', found the end of the text"],
     [
       'module m; 3; endmodule',
       "1:11 '3' expected a declaration, an instance or another item, or 'endmodule', found a number",
