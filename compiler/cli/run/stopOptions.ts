@@ -62,7 +62,8 @@ export function stopsOf(design: Design, options: StopOptions, record?: string): 
   return {
     design: { ...design, circuit },
     outlets: [stopWhen(conditions, { after, lookAround, ...(past !== undefined && { past }) })],
-    key: JSON.stringify(texts),
+    // Not the key of `shownDesign` for the same texts.
+    key: `stop ${JSON.stringify(texts)}`,
   };
 }
 
