@@ -2,7 +2,6 @@ import type binaryen from 'binaryen';
 import { firstState } from '../program/program.js';
 import { stepOperands, type VectorCode, VectorOp, type VectorSink } from '../program/vectorCode.js';
 import type { Emission, Pointers } from './blockEmitter.js';
-import { fence, STRETCH } from './fence.js';
 import { emitInputLanes } from './inputLanes.js';
 import { LANES } from './lanes.js';
 import { storeHalf } from './packOutputs.js';
@@ -23,8 +22,9 @@ export interface VectorTypes {
 }
 
 /**
- * Emits vector steps as straight-line code, with a fence after each stretch, in a block labelled
- * `LEAVE`. A result read once becomes part of its reader's expression; others get a local.
+ * Emits vector steps as straight-line code. A result read once becomes part of its reader's
+ * expression; others get a local. Stores keep things in order well enough: fences cost more here than
+ * they save.
  */
 export class VectorEmitter {
   readonly statements: binaryen.ExpressionRef[] = [];
@@ -79,14 +79,9 @@ export class VectorEmitter {
     };
     for (const sink of sinks.states) add(sink, () => this.#storeState(sink));
     for (const sink of sinks.outputs) add(sink, () => this.#storeOutputs(sink));
-    const { module, fences } = this.#emission;
     for (let step = start; step < end; step++) {
       this.#emitStep(step);
       for (const store of stores.get(step) ?? []) store();
-      const done = step + 1 - start;
-      if (!fences || done % STRETCH !== 0 || step + 1 === end) continue;
-      const number = done / STRETCH;
-      this.statements.push(fence(module, this.#types.i32, this.#pointers.current, number));
     }
   }
 

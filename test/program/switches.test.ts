@@ -3,7 +3,6 @@ import { describe, expect, it } from 'vitest';
 import { powerUpState } from '../../compiler/circuit/powerUp.js';
 import { compile, designOf, packedProgramsOf, programsOf } from '../../compiler/compile.js';
 import { Source } from '../../compiler/diagnostics/source.js';
-import { emitModel, loadBinaryen } from '../../compiler/emit/emitModel.js';
 import { localEmitter } from '../../compiler/emit/emitter.js';
 import { BytecodeEngine } from '../../compiler/interpret/bytecodeEngine.js';
 import { ReferenceEngine } from '../../compiler/interpret/reference/referenceEngine.js';
@@ -92,34 +91,6 @@ describe('each switch', () => {
       expect(changed, name).toBe(name !== 'tables');
     }
     expect(await bytes({ packWords: true })).toBe(whole);
-  });
-
-  it('leaves packed code without a fence', async () => {
-    // Each stage turns a word by sixteen bits, so that vectors need not be rearranged.
-    const stages = Array.from(
-      { length: 40 },
-      (_, i) => `wire [63:0] t${i + 1} = (t${i} & d) ^ {t${i}[47:0], t${i}[63:48]};`,
-    ).join(' ');
-    const rounds = designFrom(
-      new Source(
-        'rounds.v',
-        `module rounds(input clk, input [63:0] d, output reg [63:0] q);
-          wire [63:0] t0 = q; ${stages}
-          always @(posedge clk) q <= t40;
-        endmodule`,
-      ),
-    );
-    const programs = packedProgramsOf(rounds);
-    expect(programs.programs[0]!.vectors?.steps.length).toBeGreaterThan(100);
-    const wasm = await loadBinaryen();
-    const branches = (passes: PassSwitches): number => {
-      const module = wasm.readBinary(emitModel(wasm, programs, rounds.layout, { passes }).bytes);
-      const text = module.emitText();
-      module.dispose();
-      return text.match(/\(br_if /g)!.length;
-    };
-    // The loop over the cycles has one.
-    expect([branches({}) > 4, branches({ fences: false })]).toEqual([true, 1]);
   });
 
   it('leaves a small machine without a table', async () => {
