@@ -52,7 +52,7 @@ function memoryOf(desk: Desk, memory: KeptMemory): Branch {
   };
   field.addEventListener('change', () => {
     const texts = field.value.split(/[\s,[\]]+/).filter((text) => text !== '');
-    const position = wordOf(indices, texts.map((text) => `[${text}]`).join(''));
+    const position = wordOf(indices, texts.map((text) => `[${Number(text)}]`).join(''));
     if (position >= 0) {
       show(position);
       return;
