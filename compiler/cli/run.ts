@@ -9,6 +9,7 @@ import type { Design } from '../compile.js';
 import { type EngineName, engineNames } from '../engines.js';
 import { CannotGoOn } from '../run/outlets/outlets.js';
 import { runDesign } from '../run/runDesign.js';
+import { isShort } from '../run/runEngine.js';
 import { exitStatus, summaryText } from '../run/runSummary.js';
 import { addCacheOption, type CacheOptions, userCache } from './cacheOption.js';
 import { addClockOption, type ClockOptions, timedDesign } from './clockOption.js';
@@ -146,7 +147,9 @@ export async function run(
   const loaded = await loadCircuit(files, request, {
     cache: cache?.netlists,
     // The compiler takes a while to get ready: it does so while the netlist is read.
-    onReading: () => emitter && isBackground(emitter) && emitter.prepare(),
+    onReading: () => {
+      if (emitter && isBackground(emitter) && !isShort(request.cycles)) emitter.prepare();
+    },
   });
   const { circuit, found, files: netlists, id } = loaded;
   const whole = timedDesign(circuit, request, { threeValued: powerUp === 'unknown' });

@@ -4,10 +4,17 @@ import type { WasmModel } from '../../runtime/wasmModel.js';
 import { type BackgroundCompiler, isBackground } from '../background/compileThread.js';
 import { StartingEngine } from '../background/startingEngine.js';
 import type { ModelCache } from '../cache/modelCache.js';
-import { cyclesOf, type Design, quickProgramsOf } from '../compile.js';
+import { cyclesOf, type Design, type DesignCycles, quickProgramsOf } from '../compile.js';
 import type { Emitter } from '../emit/emitter.js';
 import { createEngine, createMarkingEngine, type EngineName } from '../engines.js';
 import { BytecodeEngine } from '../interpret/bytecodeEngine.js';
+
+/** Cycles of a run that is over sooner when it is interpreted than a compiler is ready. */
+const SHORT_CYCLES = 1000;
+
+/** Whether a run of so many cycles, if that is known, should not be compiled for. */
+export const isShort = (cycles: number | undefined): boolean =>
+  cycles !== undefined && cycles <= SHORT_CYCLES;
 
 /** What decides about the engine of a run. */
 export interface EngineWish {
@@ -16,6 +23,8 @@ export interface EngineWish {
   readonly marks: boolean;
   /** The state elements that the run starts with, see `ModelOptions`. */
   readonly start: Uint8Array;
+  /** How long the run will be, if that is known. */
+  readonly cycles?: number;
   /** Started before, to be ready. */
   readonly emitter?: Emitter;
   /** Models of the circuit, its outputs apart, that were compiled before. */
@@ -24,7 +33,7 @@ export interface EngineWish {
 
 /**
  * Makes the engine of a run. Generated code that a thread has to compile is not waited for: the
- * first cycles are interpreted meanwhile.
+ * first cycles are interpreted meanwhile, and all cycles of a short run.
  */
 export async function runEngine(design: Design, wish: EngineWish): Promise<Engine> {
   const { engine, marks, start, emitter, models } = wish;
@@ -34,6 +43,7 @@ export async function runEngine(design: Design, wish: EngineWish): Promise<Engin
   }
   const known = models?.find(design, { start });
   if (known !== undefined) return WasmEngine.create(known);
+  if (isShort(wish.cycles)) return interpreted(design, cyclesOf(design));
   return startingEngine(design, emitter, start, (model) => models?.keep(design, { start }, model));
 }
 
@@ -49,5 +59,8 @@ function startingEngine(
     keep(model);
     return WasmEngine.create(model);
   });
-  return new StartingEngine(new BytecodeEngine(quickProgramsOf(cycles), design.layout), faster);
+  return new StartingEngine(interpreted(design, cycles), faster);
 }
+
+const interpreted = ({ layout }: Design, cycles: DesignCycles): BytecodeEngine =>
+  new BytecodeEngine(quickProgramsOf(cycles), layout);

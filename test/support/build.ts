@@ -29,7 +29,7 @@ export default async function build({ provide }: TestProject): Promise<() => voi
   mkdirSync(cache, { recursive: true });
   // What is remembered of a build that is gone would keep it from being made again.
   if (!existsSync(pathOf('dist/compiler/cli/main.js'))) rmSync(memory, { force: true });
-  const project = ['-p', pathOf('tsconfig.build.json')];
+  const project = ['-p', pathOf('.ci/tsconfig.build.json')];
   const incremental = ['--incremental', '--tsBuildInfoFile', memory];
   const args = [pathOf('node_modules/typescript/bin/tsc'), ...project, ...incremental];
   try {
