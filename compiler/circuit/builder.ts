@@ -187,6 +187,11 @@ export class CircuitBuilder {
     return this.#memories.add(shape);
   }
 
+  /** Gives a memory other contents at power-up, in the form of `MemoryShape.initial`. */
+  setContents(memory: number, initial: Uint8Array | undefined): void {
+    this.#memories.setContents(memory, initial);
+  }
+
   /**
    * Adds a port of a memory that reads the word at `address` into `data`, `NO_NET` for a bit that
    * nobody reads. Throws RangeError for a wrong number of nets.

@@ -19,7 +19,7 @@ export interface WritePins {
 }
 
 interface OpenMemory {
-  readonly shape: MemoryShape;
+  shape: MemoryShape;
   readonly reads: ReadPort[];
   readonly writes: WritePort[];
 }
@@ -31,6 +31,12 @@ export class MemoryTable {
   /** Adds a memory without ports; returns its number. */
   add(shape: MemoryShape): number {
     return this.#memories.push({ shape, reads: [], writes: [] }) - 1;
+  }
+
+  /** Gives a memory other contents at power-up. */
+  setContents(memory: number, initial: Uint8Array | undefined): void {
+    const open = this.#memories[memory]!;
+    open.shape = { ...open.shape, initial };
   }
 
   widthOf(memory: number): number {

@@ -8,7 +8,7 @@ import type { Source } from '../../diagnostics/source.js';
 import type { Position, SourceMap } from '../../diagnostics/sourceMap.js';
 import type { NameId, NameTable } from '../names.js';
 import type { Budget } from './budget.js';
-import type { InitialContents } from './initialContents.js';
+import type { Contents } from './initialContents.js';
 import type { RoutineItem } from './syntax.js';
 
 /** A constant of known width: bits in `value`, x and z bits set in `unknown`. */
@@ -69,8 +69,6 @@ export interface MemoryBinding {
   readonly words: readonly (readonly NetId[])[];
   /** What holds the words where they have no nets. */
   readonly held?: HeldMemory;
-  /** Set where such an array is named from another module. */
-  readonly isFar?: true;
 }
 
 /** An array that is held as a memory of the circuit. */
@@ -79,9 +77,11 @@ export interface HeldMemory {
   readonly number: number;
   /** Bits of each index in an address, as many as for `indices` of the binding. */
   readonly indices: readonly MemoryIndex[];
-  readonly contents: InitialContents;
+  readonly contents: Contents;
   /** Where it is declared. */
   readonly position: Position;
+  /** Set where it is the memory of another module. */
+  readonly isFar?: true;
 }
 
 /**
@@ -140,8 +140,8 @@ export interface Elaboration {
   readData?(path: string, from: Position): Source | undefined;
   /**
    * Takes note that a held memory is used as only registers can be, at a place: its module is
-   * compiled anew, with the memory built from registers, where that is not too large. Returns only
-   * if it is.
+   * compiled anew, with the memory built from registers, where that is not too large, and the whole
+   * design where the memory is another module's. Returns only if it is too large.
    */
   needRegisters?(memory: HeldMemory): void;
 }

@@ -146,17 +146,6 @@ export function reportIndices(base: NameExpression | SelectExpression, context: 
   return true;
 }
 
-/** Whether an array may be used where it is named; a diagnostic if it is another module's memory. */
-export function isNear({ memory, name }: WordSelect, context: Context): boolean {
-  if (memory.isFar === undefined) return true;
-  const text = pathText(context.scope.shared, name.path);
-  const message =
-    `\`${text}\` is a memory of another module, which only that module can read and write; ` +
-    'lead its words through ports, or give it the name of its data file by a parameter';
-  refuse(context, name, message);
-  return false;
-}
-
 /** Whether words that are nets are few enough for multiplexers; a diagnostic if not. */
 export function withinMemoryLimit(
   { memory, name, selects }: WordSelect,

@@ -61,12 +61,6 @@ function memoryNamed(
     report(shared, 'target-invalid', target, message);
     return undefined;
   }
-  if (binding.isFar) {
-    const message =
-      'this memory is in another module; call the task there, with the file name as a parameter';
-    refuse(context, target, message);
-    return undefined;
-  }
   if (binding.indices.length === 1) return binding;
   refuse(
     context,

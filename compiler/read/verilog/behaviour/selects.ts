@@ -9,7 +9,6 @@ import type { Bits, Logic } from './logic.js';
 import {
   constantWord,
   indexValues,
-  isNear,
   readNets,
   reportIndices,
   type WordSelect,
@@ -172,7 +171,7 @@ export function isAccessible(binding: SignalBinding | MemoryBinding, { access }:
 
 function readWord(select: WordSelect, context: Context): Bits | undefined {
   const { memory, name } = select;
-  if (!mayRead(name, memory, context) || !isNear(select, context)) return undefined;
+  if (!mayRead(name, memory, context)) return undefined;
   const values = indexValues(select, context);
   if (typeof values === 'string') return unknownBits(wordWidth(memory), context.logic);
   const word = constantWord(memory, values);

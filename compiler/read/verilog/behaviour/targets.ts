@@ -7,7 +7,6 @@ import { type IndexValue, indexValue, warnOutside } from './indexValue.js';
 import {
   constantWord,
   indexValues,
-  isNear,
   reportIndices,
   type WordSelect,
   withinMemoryLimit,
@@ -209,7 +208,6 @@ function wordRegion(
 function wordPlaces(select: WordSelect, context: Context): readonly Place[] | undefined {
   const { logic } = context;
   const { memory } = select;
-  if (!isNear(select, context)) return undefined;
   const values = indexValues(select, context);
   // Nothing is written where an index is x or there is no such word.
   if (values === 'unknown') return [];

@@ -43,16 +43,15 @@ export function sizeProblem(size: ArraySize, isHeld: boolean): string | undefine
 
 /** Makes the memory that holds an array. */
 export function heldMemory(
-  { builder, names, arrayPositions }: ModuleBody,
+  { builder, names }: ModuleBody,
   { index: block }: BlockScope,
   { width, indices: ranges }: ArraySize,
   word: WordForm,
-  { name, start }: DeclaredName,
+  { name, start: position }: DeclaredName,
 ): HeldMemory {
   const indices = ranges.map(memoryIndex);
   const contents = new InitialContents(width, wordsOf(ranges));
   const text = names.text(name);
-  const number = builder.memory({ name: text, block, width, word, indices, contents });
-  arrayPositions.push(start);
-  return { number, indices, contents, position: start };
+  const number = builder.memory({ name: text, block, width, word, indices, contents, position });
+  return { number, indices, contents, position };
 }

@@ -98,10 +98,10 @@ export class ModuleBody implements OuterHost {
   placeEarly: ((instance: number) => void) | undefined;
   /** Own nets by the net of the module around this one that they stand for. */
   readonly outerNets = new Map<NetId, NetId>();
+  /** Likewise memories. */
+  readonly outerMemories = new Map<HeldMemory, HeldMemory>();
   dependsOnPlace = false;
 
-  /** Where the array of each memory of the recording is declared. */
-  readonly arrayPositions: Position[] = [];
   /** Positions of the arrays that are to be built from registers, whatever their size. */
   readonly inRegisters: ReadonlySet<Position>;
 
@@ -175,7 +175,7 @@ export class ModuleBody implements OuterHost {
 
   needRegisters(memory: HeldMemory): void {
     const { width, indices } = this.builder.memories[memory.number]!;
-    if (depthOf(indices) * width <= REGISTER_LIMIT) throw new NeedsRegisters(memory.position);
+    if (depthOf(indices) * width <= REGISTER_LIMIT) throw new NeedsRegisters(memory);
   }
 
   /** The scope of the module itself. */
@@ -218,6 +218,15 @@ export class ModuleBody implements OuterHost {
     const net = this.builder.declare(1);
     this.outerNets.set(outside, net);
     return net;
+  }
+
+  ownMemory(outside: HeldMemory): HeldMemory {
+    const known = this.outerMemories.get(outside);
+    if (known !== undefined) return known;
+    const { memories } = this.outer!.host.builder;
+    const memory = this.builder.farMemory(memories[outside.number]!);
+    this.outerMemories.set(outside, memory);
+    return memory;
   }
 
   text(name: NameId): string {

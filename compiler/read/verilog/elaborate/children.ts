@@ -2,6 +2,7 @@ import { GrowableUint32 } from '../../../circuit/growable.js';
 import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
 import type { NameId } from '../../names.js';
 import { type Budget, tooLarge } from '../budget.js';
+import type { HeldMemory } from '../scope.js';
 import type { Origin } from './recording.js';
 
 /** A net of a child that is no port, and the net of the parent that it is one with. */
@@ -10,10 +11,17 @@ export interface Import {
   readonly net: NetId;
 }
 
+/** A memory of a child, by its number, and the memory of the parent that is one with it. */
+export interface MemoryImport {
+  readonly childMemory: number;
+  readonly memory: HeldMemory;
+}
+
 // What an instance takes in the columns below, its ports aside.
 const NUMBERS_OF_CHILD = 6;
 
 const noImports: readonly Import[] = [];
+const noMemories: readonly MemoryImport[] = [];
 
 /**
  * The instances inside a module, as columns: which template, under which name, and the parent's
@@ -29,6 +37,7 @@ export class Children {
   readonly #portStart = new GrowableUint32(2);
   readonly #ports = new GrowableUint32(8);
   readonly #imports = new Map<number, Import[]>();
+  readonly #memories = new Map<number, MemoryImport[]>();
   readonly #reached = new Map<NetId, { readonly child: number; readonly childNet: NetId }>();
 
   /** `budget` keeps the list from becoming too long, where that is not sure anyway. */
@@ -137,6 +146,27 @@ export class Children {
     const imports = this.#imports.get(child);
     if (imports === undefined) this.#imports.set(child, [{ childNet, net }]);
     else imports.push({ childNet, net });
+  }
+
+  /** Memories of the child that hierarchical names make one with memories of the parent. */
+  memoryImports(child: number): readonly MemoryImport[] {
+    return this.#memories.get(child) ?? noMemories;
+  }
+
+  /** The parent's memory that is one with a memory of the child; made by `make` when first asked for. */
+  importMemory(child: number, childMemory: number, make: () => HeldMemory): HeldMemory {
+    const known = this.memoryImports(child).find((each) => each.childMemory === childMemory);
+    if (known !== undefined) return known.memory;
+    const memory = make();
+    this.adoptMemory(child, childMemory, memory);
+    return memory;
+  }
+
+  /** Lets a memory of the child be one with a memory of the parent. */
+  adoptMemory(child: number, childMemory: number, memory: HeldMemory): void {
+    const imports = this.#memories.get(child);
+    if (imports === undefined) this.#memories.set(child, [{ childMemory, memory }]);
+    else imports.push({ childMemory, memory });
   }
 
   /** The net of a child for which a net of the parent was made by a hierarchical name. */

@@ -1,4 +1,3 @@
-import type { Position } from '../../../diagnostics/sourceMap.js';
 import type { ModuleSyntax } from '../syntax.js';
 import { declareTargets, lowerAssigns, lowerProcesses } from './assigns.js';
 import { ModuleBody } from './body.js';
@@ -26,12 +25,12 @@ export function compileModule(
   overrides: Overrides,
   outer: Outer | undefined,
 ): Template {
-  const inRegisters = new Set<Position>();
+  const inRegisters = new Set(design.inRegisters);
   for (;;) {
     try {
       return compileWith(new ModuleBody(design, module, outer, inRegisters), overrides);
     } catch (error) {
-      if (!(error instanceof NeedsRegisters) || inRegisters.has(error.position)) throw error;
+      if (!(error instanceof NeedsRegisters) || error.isFar) throw error;
       inRegisters.add(error.position);
     }
   }

@@ -25,12 +25,16 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
   driveSupplies(body, classes);
   const usage = countUsage(body, classes);
   checkConflicts(body, usage, classes);
-  driveDefaults(body, usage, boundary);
+  const defaults = driveDefaults(body, usage, boundary);
   const canonical = fuseBuffers(builder, usage);
   const find = (net: number): number => canonical?.[net] ?? net;
   const nets = Uint32Array.from(boundary.nets, find);
   const outerNets = [...body.outerNets].map(([outside, net]) => ({
     net: netId(find(net)),
+    outside,
+  }));
+  const outerMemories = [...body.outerMemories].map(([outside, { number }]) => ({
+    memory: number,
     outside,
   }));
   // What drives an own variable has taken its value along.
@@ -51,8 +55,9 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
     blocks: blockNamesOf(body, find),
     scope: body.root,
     netTypes: netTypesOf(classes, find),
+    ...(defaults.size > 0 && { defaults }),
     ...(farInitials.length > 0 && { farInitials }),
-    ...(body.dependsOnPlace && { outerNets }),
+    ...(body.dependsOnPlace && { outerNets, outerMemories }),
   };
   const { driven } = design;
   markDriven(body, usage);

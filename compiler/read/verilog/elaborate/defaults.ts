@@ -68,13 +68,14 @@ export function netTypesOf(
   );
 }
 
-/** Gives a variable that nothing assigns its value at power-up. */
+/** Gives a variable that nothing assigns its value at power-up; returns the drivers that do. */
 export function driveDefaults(
   { builder, initialValues, outerNets }: ModuleBody,
   usage: Usage,
   boundary: Boundary,
-): void {
-  if (initialValues.size === 0) return;
+): ReadonlySet<number> {
+  const drivers = new Set<number>();
+  if (initialValues.size === 0) return drivers;
   const outside = drivenOutside(builder, boundary);
   for (const net of outerNets.values()) outside.add(builder.find(net));
   for (const [net, value] of initialValues) {
@@ -82,9 +83,11 @@ export function driveDefaults(
     if (usage.driveOf(root) !== Drive.None || outside.has(root)) continue;
     const { source, offset } = builder.netOrigin(root);
     builder.at(source, offset);
+    drivers.add(builder.driverCount);
     builder.drive(root, value === 1 ? GateKind.One : GateKind.Zero, []);
     usage.drive(root, Drive.Full);
   }
+  return drivers;
 }
 
 /** Nets of ports that take their value from the instance's connection. */

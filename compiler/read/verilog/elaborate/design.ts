@@ -39,6 +39,8 @@ export interface DesignChoice {
   readonly allowance?: Allowance | undefined;
   /** Bits from which on arrays are held as memories; `HELD_FROM` unless given. */
   readonly memoriesFrom?: number | undefined;
+  /** Positions of arrays that are to be built from registers, whatever their size. */
+  readonly inRegisters?: ReadonlySet<Position>;
   /** Finds the file that a text in a source names; undefined if there is none. */
   readonly readInclude?: ((path: string, from: Source) => Source | undefined) | undefined;
 }
@@ -68,6 +70,7 @@ export class Design {
   /** See `DesignChoice`. */
   readonly readInclude: DesignChoice['readInclude'];
   readonly memoriesFrom: number;
+  readonly inRegisters: ReadonlySet<Position>;
   /** Modules that others have replaced. */
   readonly dropped: readonly ModuleSyntax[];
   /** Names of modules that instances are not to have the inside of. */
@@ -104,7 +107,9 @@ export class Design {
       allowance,
       readInclude,
       memoriesFrom = HELD_FROM,
+      inRegisters = new Set(),
     } = choice;
+    this.inRegisters = inRegisters;
     this.memoriesFrom = memoriesFrom;
     this.readInclude = readInclude;
     this.names = syntax.names;

@@ -3,7 +3,7 @@ import { type BusProblem, resolveBuses } from '../../../circuit/busResolution.js
 import type { Circuit } from '../../../circuit/circuit.js';
 import type { Diagnostics } from '../../../diagnostics/diagnostics.js';
 import type { Source } from '../../../diagnostics/source.js';
-import type { SourceMap } from '../../../diagnostics/sourceMap.js';
+import type { Position, SourceMap } from '../../../diagnostics/sourceMap.js';
 import { type Allowance, BudgetExceeded } from '../budget.js';
 import type { ModuleSyntax, VerilogSyntax } from '../syntax.js';
 import { addBoxPorts } from './boxPorts.js';
@@ -13,6 +13,7 @@ import { isWired } from './defaults.js';
 import { Design, NO_TEMPLATE } from './design.js';
 import type { LibraryCell } from './libraryCell.js';
 import { DistinctDiagnostics, wordSpan } from './messages.js';
+import { NeedsRegisters } from './needsRegisters.js';
 import { noOverrides } from './overrides.js';
 import { compilePrimitive } from './primitives.js';
 import { withReplacements } from './replacements.js';
@@ -53,7 +54,29 @@ export function elaborate(
   sources: SourceMap,
   diagnostics: Diagnostics,
 ): Circuit | undefined {
-  const found = new DistinctDiagnostics();
+  const inRegisters = new Set<Position>();
+  for (;;) {
+    const found = new DistinctDiagnostics();
+    try {
+      const circuit = elaborateWith(inRegisters, syntax, options, sources, found);
+      for (const { code, message, span, related } of found.list) {
+        diagnostics.add(code, message, span, related);
+      }
+      return circuit;
+    } catch (error) {
+      if (!(error instanceof NeedsRegisters)) throw error;
+      inRegisters.add(error.position);
+    }
+  }
+}
+
+function elaborateWith(
+  inRegisters: ReadonlySet<Position>,
+  syntax: VerilogSyntax,
+  options: ElaborateOptions,
+  sources: SourceMap,
+  found: Diagnostics,
+): Circuit | undefined {
   const makers = { module: compileModule, primitive: compilePrimitive, box: compileBox };
   const {
     blackBoxes = [],
@@ -70,12 +93,9 @@ export function elaborate(
     allowance,
     readInclude,
     memoriesFrom,
+    inRegisters,
   });
-  const circuit = withinBudget(design, () => build(design, options.top));
-  for (const { code, message, span, related } of found.list) {
-    diagnostics.add(code, message, span, related);
-  }
-  return circuit;
+  return withinBudget(design, () => build(design, options.top));
 }
 
 /** What `work` gives, or undefined and a report where it would take too much. */

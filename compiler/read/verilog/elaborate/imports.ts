@@ -5,7 +5,7 @@ import { mapBinding } from './mapBinding.js';
 import type { Recording } from './recording.js';
 import type { Template } from './template.js';
 
-/** A binding inside a child, told in nets of the parent; undefined for a routine. */
+/** A binding inside a child, told in the parent; undefined for a routine. */
 export function imported(
   binding: Binding,
   child: number,
@@ -13,9 +13,15 @@ export function imported(
   children: Children,
   recording: Recording,
 ): Binding | undefined {
-  return mapBinding(binding, (inside) => {
-    const net = (template.canonical?.[inside] ?? inside) as NetId;
-    const place = template.boundary.indexOf(net);
-    return children.import(child, net, place, () => recording.net());
+  return mapBinding(binding, {
+    net: (inside) => {
+      const net = (template.canonical?.[inside] ?? inside) as NetId;
+      const place = template.boundary.indexOf(net);
+      return children.import(child, net, place, () => recording.net());
+    },
+    memory: ({ number }) => {
+      const memory = template.recording.memories[number]!;
+      return children.importMemory(child, number, () => recording.farMemory(memory));
+    },
   });
 }

@@ -1,14 +1,21 @@
 import type { NetId } from '../../../circuit/ids.js';
-import type { Binding } from '../scope.js';
+import type { Binding, HeldMemory } from '../scope.js';
 
-/** A binding with other nets; undefined for a routine, which reads nets of its own module. */
-export function mapBinding(binding: Binding, map: (net: NetId) => NetId): Binding | undefined {
+/** How nets and memories of one module are told in another. */
+export interface ModuleMap {
+  net(net: NetId): NetId;
+  memory(memory: HeldMemory): HeldMemory;
+}
+
+/** A binding told in another module; undefined for a routine, which reads nets of its own module. */
+export function mapBinding(binding: Binding, map: ModuleMap): Binding | undefined {
+  const { net } = map;
   switch (binding.kind) {
     case 'signal':
-      return { ...binding, nets: binding.nets.map(map) };
+      return { ...binding, nets: binding.nets.map(net) };
     case 'memory':
-      if (binding.held !== undefined) return { ...binding, isFar: true };
-      return { ...binding, words: binding.words.map((word) => word.map(map)) };
+      if (binding.held !== undefined) return { ...binding, held: map.memory(binding.held) };
+      return { ...binding, words: binding.words.map((word) => word.map(net)) };
     case 'parameter':
       return binding;
     case 'routine':

@@ -4,10 +4,13 @@ import type { Position } from '../../../diagnostics/sourceMap.js';
 export class NeedsRegisters extends Error {
   /** Where the array is declared. */
   readonly position: Position;
+  /** Set where another module's use of the array is the reason. */
+  readonly isFar: boolean;
 
-  constructor(position: Position) {
+  constructor({ position, isFar }: { readonly position: Position; readonly isFar?: true }) {
     super('an array needs registers');
     this.name = 'NeedsRegisters';
     this.position = position;
+    this.isFar = isFar === true;
   }
 }

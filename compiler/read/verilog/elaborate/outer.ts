@@ -1,6 +1,6 @@
 import type { NetId } from '../../../circuit/ids.js';
 import type { NameId } from '../../names.js';
-import type { Binding } from '../scope.js';
+import type { Binding, HeldMemory } from '../scope.js';
 import type { BlockScope, ScopeHost } from './blockScope.js';
 import { mapBinding } from './mapBinding.js';
 
@@ -20,12 +20,20 @@ export interface OuterHost extends ScopeHost {
   dependsOnPlace: boolean;
   /** Its own net that stands for a net of the module around it. */
   ownNet(outside: NetId): NetId;
+  /** Likewise for a memory. */
+  ownMemory(outside: HeldMemory): HeldMemory;
 }
 
 /** A net of a module that is one with a net of the module around it. */
 export interface OuterNet {
   readonly net: NetId;
   readonly outside: NetId;
+}
+
+/** A memory of a module, by its number, that stands for one of the module around it. */
+export interface OuterMemory {
+  readonly memory: number;
+  readonly outside: HeldMemory;
 }
 
 /**
@@ -55,11 +63,20 @@ export function bindingAbove(host: OuterHost, path: readonly NameId[]): Binding 
 
 function lifted(host: OuterHost, owner: OuterHost, binding: Binding): Binding | undefined {
   for (let at = host; at !== owner; at = at.outer!.host) at.dependsOnPlace = true;
-  return host === owner ? binding : mapBinding(binding, (net) => ownNetOf(host, owner, net));
+  if (host === owner) return binding;
+  return mapBinding(binding, {
+    net: (net) => ownNetOf(host, owner, net),
+    memory: (memory) => ownMemoryOf(host, owner, memory),
+  });
 }
 
 /** The net of a module that stands for a net of one somewhere around it. */
 function ownNetOf(host: OuterHost, owner: OuterHost, net: NetId): NetId {
   if (host === owner) return net;
   return host.ownNet(ownNetOf(host.outer!.host, owner, net));
+}
+
+function ownMemoryOf(host: OuterHost, owner: OuterHost, memory: HeldMemory): HeldMemory {
+  if (host === owner) return memory;
+  return host.ownMemory(ownMemoryOf(host.outer!.host, owner, memory));
 }

@@ -156,13 +156,14 @@ function addPlainChild(
 
 function addChild(body: ModuleBody, { template, name, scope, position }: Placed): number {
   const { design, children } = body;
-  const { boundary, outerNets = [] } = design.templates[template]!;
+  const { boundary, outerNets = [], outerMemories = [] } = design.templates[template]!;
   const child = addPlainChild(body, template, name, scope, position);
   for (const { net, outside } of outerNets) {
     const place = boundary.indexOf(net);
     if (place < 0) children.adopt(child, net, outside);
     else children.setPort(child, place, outside);
   }
+  for (const { memory, outside } of outerMemories) children.adoptMemory(child, memory, outside);
   return child;
 }
 

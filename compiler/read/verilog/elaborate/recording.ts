@@ -4,13 +4,14 @@ import { Edge, Priority } from '../../../circuit/circuit.js';
 import { GateKind } from '../../../circuit/gates.js';
 import { GrowableUint8, GrowableUint32 } from '../../../circuit/growable.js';
 import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
-import type { MemoryIndex, WordForm } from '../../../circuit/memory.js';
+import { depthOf, type MemoryIndex, type WordForm } from '../../../circuit/memory.js';
 import { pinNets, type WritePins } from '../../../circuit/memoryTable.js';
 import type { CellTable } from '../../../circuit/tables/cellTable.js';
 import { X } from '../../../circuit/values.js';
+import type { Position } from '../../../diagnostics/sourceMap.js';
 import { type Budget, tooLarge } from '../budget.js';
-import type { InitialContents } from '../initialContents.js';
-import type { GateSink } from '../scope.js';
+import { FarContents, type InitialContents } from '../initialContents.js';
+import type { GateSink, HeldMemory } from '../scope.js';
 import { Unions } from './unions.js';
 
 /** A place as `GateSink.at` takes it: index of a source, byte offset in it. */
@@ -44,15 +45,18 @@ export interface RecordedTable {
   readonly table: CellTable;
 }
 
-/** A memory of a module, with its ports. */
+/** A memory of a module, or of another one that it names, with the ports of this module. */
 export interface RecordedMemory {
   readonly name: string;
-  /** Index of the block of the module that it is declared in. */
+  /** Index of the block of its module that it is declared in. */
   readonly block: number;
   readonly width: number;
   readonly word: WordForm;
   readonly indices: readonly MemoryIndex[];
-  readonly contents: InitialContents;
+  /** What this module says of its contents at power-up. */
+  readonly contents: InitialContents | FarContents;
+  /** Where it is declared. */
+  readonly position: Position;
   readonly origin: Origin;
   /** Ports by which it is read, each with the driver of the lowest bit; the others follow. */
   readonly reads: { readonly address: readonly NetId[]; readonly firstDriver: number }[];
@@ -219,6 +223,14 @@ export class Recording implements GateSink {
   memory(memory: Omit<RecordedMemory, 'origin' | 'reads' | 'writes'>): number {
     const origin = { source: this.#atSource, offset: this.#atOffset };
     return this.memories.push({ ...memory, origin, reads: [], writes: [] }) - 1;
+  }
+
+  /** Adds what stands for a memory of another module. */
+  farMemory(memory: RecordedMemory): HeldMemory {
+    const { width, indices, position } = memory;
+    const contents = new FarContents(width, depthOf(indices), memory.contents);
+    const number = this.memories.push({ ...memory, contents, reads: [], writes: [] }) - 1;
+    return { number, indices, contents, position, isFar: true };
   }
 
   readMemory(memory: number, address: readonly NetId[]): readonly NetId[] {

@@ -3,6 +3,7 @@ import { GateKind } from '../../../circuit/gates.js';
 import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
 import type { NameId } from '../../names.js';
 import { BUS_PART, BusPin, DROPPED, type Origin, Pin, unpackAttributes } from './recording.js';
+import { MemoryStamper, type PlacedMemory } from './stampMemories.js';
 import type { Template } from './template.js';
 
 /** An instance of a black box in the circuit. */
@@ -22,6 +23,8 @@ interface Frame {
   nets: Uint32Array;
   /** The circuit's scope of each block of the template. */
   scopes: number[];
+  /** The circuit's memory for each one of the template. */
+  memories: readonly PlacedMemory[];
   nextChild: number;
   /** Where the circuit's logic is said to come from, instead of the text of a library cell. */
   origin: Origin | undefined;
@@ -46,6 +49,7 @@ export class Stamper {
   readonly #modules = new Map<Template, number>();
   /** Values at power-up that other modules give to state elements, by the circuit's net. */
   readonly #farInitials = new Map<number, 0 | 1>();
+  readonly #memories: MemoryStamper;
   /** The black boxes stamped so far. */
   readonly boxes: PlacedBox[] = [];
 
@@ -53,6 +57,7 @@ export class Stamper {
   constructor(builder: CircuitBuilder, templates: readonly Template[]) {
     this.#builder = builder;
     this.#templates = templates;
+    this.#memories = new MemoryStamper(builder);
   }
 
   /** Stamps the top; returns the circuit's nets of its boundary. */
@@ -60,7 +65,7 @@ export class Stamper {
     const frame = this.#enter(0, top, undefined);
     this.#fill(frame);
     this.#addScopes(frame, top.name, 0);
-    this.#addMemories(frame);
+    this.#memories.add(frame, 0, []);
     const boundary = top.boundary.map((net) => frame.nets[net]!);
     for (let depth = 0; depth >= 0; ) {
       const current = this.#frames[depth]!;
@@ -68,6 +73,7 @@ export class Stamper {
       else if (this.#stampChild(current, current.nextChild++, depth + 1)) depth++;
     }
     this.#builder.setInitials(this.#farInitials);
+    this.#memories.finish();
     return boundary;
   }
 
@@ -89,7 +95,11 @@ export class Stamper {
     this.#fill(frame);
     const name = children.name(child);
     if (name !== 0) this.#addScopes(frame, name, parent.scopes[children.block(child)]!);
-    this.#addMemories(frame);
+    const shared = children.memoryImports(child).map(({ childMemory, memory }) => ({
+      childMemory,
+      placed: parent.memories[memory.number]!,
+    }));
+    this.#memories.add(frame, depth, shared);
     if (template.isBox) this.#addBox(parent, child, frame);
     return template.children.count > 0;
   }
@@ -111,7 +121,14 @@ export class Stamper {
     const count = template.recording.netCount;
     let frame = this.#frames[depth];
     if (frame === undefined) {
-      frame = { template, nets: new Uint32Array(64), scopes: [], nextChild: 0, origin };
+      frame = {
+        template,
+        nets: new Uint32Array(64),
+        scopes: [],
+        memories: [],
+        nextChild: 0,
+        origin,
+      };
       this.#frames[depth] = frame;
     }
     if (frame.nets.length < count) frame.nets = new Uint32Array(count * 2);
@@ -149,17 +166,22 @@ export class Stamper {
       const own = inputs.map((net) => netId(nets[net]!));
       builder.table(driven!.get(nets[output]!)!, own, table);
     }
-    for (const [net, value] of template.farInitials ?? []) this.#farInitials.set(nets[net]!, value);
+    for (const [net, value] of template.farInitials ?? []) {
+      // What a module further out says wins; it has been stamped before.
+      const own = nets[net]!;
+      if (!this.#farInitials.has(own)) this.#farInitials.set(own, value);
+    }
     for (const [net, type] of template.netTypes ?? []) {
       builder.setNetType(netId(nets[net]!), type);
     }
   }
 
   /** Returns the net that the driver has got, `NO_NET` for what is no driver of its own. */
-  #drive({ recording }: Template, nets: Uint32Array, driver: number): NetId {
-    const kind = recording.driverKind(driver);
+  #drive({ recording, defaults }: Template, nets: Uint32Array, driver: number): NetId {
+    let kind = recording.driverKind(driver);
     if (kind === DROPPED || kind === GateKind.MemoryRead) return NO_NET;
     const output = netId(nets[recording.driverOutput(driver)]!);
+    if (defaults?.has(driver)) kind = this.#farInitials.get(output) ?? kind;
     const start = recording.faninStart(driver);
     if (kind === GateKind.Register || kind === GateKind.Latch) {
       return this.#driveState(recording, driver, output, nets);
@@ -208,40 +230,6 @@ export class Stamper {
       list[i] = net === NO_NET ? NO_NET : netId(nets[net]!);
     }
     return list;
-  }
-
-  /** Adds the memories of a template with their ports; the scopes must be there. */
-  #addMemories({ template: { recording }, nets, scopes, origin: cell }: Frame): void {
-    if (recording.memories.length === 0) return;
-    const builder = this.#builder;
-    const moved = (list: readonly NetId[]): NetId[] => list.map((net) => netId(nets[net]!));
-    for (const memory of recording.memories) {
-      const { name, block, width, word, indices, contents, origin } = memory;
-      const path = builder.hierarchy.path(scopes[block]!);
-      const number = builder.memory({
-        ...{ name: path === '' ? name : `${path}.${name}`, width, word, indices },
-        ...{ initial: contents.bytes, sourceIndex: origin.source, offset: origin.offset },
-      });
-      for (const { address, firstDriver } of memory.reads) {
-        const place = cell ?? recording.driverOrigin(firstDriver);
-        builder.at(place.source, place.offset);
-        const data = Array.from({ length: width }, (_, bit) => {
-          const isRead = recording.driverKind(firstDriver + bit) !== DROPPED;
-          return isRead ? netId(nets[recording.driverOutput(firstDriver + bit)]!) : NO_NET;
-        });
-        if (data.some((net) => net !== NO_NET)) builder.readPort(number, moved(address), data);
-      }
-      for (const { clock, edge, enable, address, data, mask } of memory.writes) {
-        builder.writeMemory(number, {
-          clock: netId(nets[clock]!),
-          ...(edge !== undefined && { edge }),
-          ...(enable !== undefined && { enable: netId(nets[enable]!) }),
-          address: moved(address),
-          data: moved(data),
-          ...(mask !== undefined && { mask: moved(mask) }),
-        });
-      }
-    }
   }
 
   /** Adds a scope for an instance and one for each block inside it. */

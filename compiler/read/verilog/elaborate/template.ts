@@ -4,7 +4,7 @@ import type { NetId } from '../../../circuit/ids.js';
 import type { NameId } from '../../names.js';
 import type { BlockScope } from './blockScope.js';
 import type { Children } from './children.js';
-import type { OuterNet } from './outer.js';
+import type { OuterMemory, OuterNet } from './outer.js';
 import type { Recording } from './recording.js';
 
 /** What a module, its instances included, does to a net. */
@@ -85,10 +85,14 @@ export interface Template {
    * template is of one instance alone.
    */
   readonly outerNets?: readonly OuterNet[];
+  /** Likewise memories. */
+  readonly outerMemories?: readonly OuterMemory[];
   /** For hierarchical names; undefined for a primitive. */
   readonly scope: BlockScope | undefined;
   /** The nets whose type says more than `wire`; absent where there is none. */
   readonly netTypes?: readonly (readonly [net: number, type: NetType])[];
+  /** Drivers that give variables which nothing assigns their value at power-up. */
+  readonly defaults?: ReadonlySet<number>;
   /** Values at power-up of variables of other modules; absent where there is none. */
   readonly farInitials?: readonly (readonly [net: number, value: 0 | 1])[];
   /** The `Drive` of any net. */
