@@ -1,8 +1,10 @@
 import { deserialize, serialize } from 'node:v8';
 import type { Circuit } from '../circuit/circuit.js';
+import type { Tables } from '../circuit/tables/tableColumns.js';
 import type { Diagnostic } from '../diagnostics/diagnostics.js';
 import type { Source, Span } from '../diagnostics/source.js';
 import { type PackedHierarchy, packHierarchy, unpackHierarchy } from './packedNames.js';
+import { type PackedTable, packTable, unpackTable } from './packedTables.js';
 
 /** A circuit and what its readers had to say. */
 export interface ReadCircuit {
@@ -25,8 +27,9 @@ interface PackedDiagnostic extends Omit<Diagnostic, 'span' | 'related'> {
   readonly related?: readonly { readonly message: string; readonly span: PackedSpan }[];
 }
 
-interface PackedCircuit extends Omit<Circuit, 'hierarchy' | 'sources'> {
+interface PackedCircuit extends Omit<Circuit, 'hierarchy' | 'tables' | 'sources'> {
   readonly hierarchy: PackedHierarchy;
+  readonly tables: Omit<Tables, 'definitions'> & { readonly definitions: readonly PackedTable[] };
   /** Their paths. */
   readonly sources: readonly string[];
 }
@@ -42,12 +45,13 @@ export function packNetlist(
   { circuit, found }: ReadCircuit,
   lookedFor: readonly LookedFor[],
 ): Uint8Array {
-  const { hierarchy, sources, ...rest } = circuit;
+  const { hierarchy, tables, sources, ...rest } = circuit;
   const entry: NetlistEntry = {
     lookedFor,
     circuit: {
       ...rest,
       hierarchy: packHierarchy(hierarchy),
+      tables: { ...tables, definitions: tables.definitions.map(packTable) },
       sources: sources.map(({ path }) => path),
     },
     found: found.map(packDiagnostic),
@@ -65,9 +69,14 @@ export function unpackNetlist(bytes: Uint8Array): {
   return {
     lookedFor,
     restore: (sourceOf) => {
-      const { hierarchy, sources, ...rest } = circuit;
+      const { hierarchy, tables, sources, ...rest } = circuit;
       return {
-        circuit: { ...rest, hierarchy: unpackHierarchy(hierarchy), sources: sources.map(sourceOf) },
+        circuit: {
+          ...rest,
+          hierarchy: unpackHierarchy(hierarchy),
+          tables: { ...tables, definitions: tables.definitions.map(unpackTable) },
+          sources: sources.map(sourceOf),
+        },
         found: found.map((packed) => unpackDiagnostic(packed, sourceOf)),
       };
     },

@@ -142,6 +142,11 @@ endmodule
     const circuit = readNetlist([source], {}, new Diagnostics())!;
     expect(circuit.memories).toHaveLength(1);
     const { restore } = unpackNetlist(packNetlist({ circuit, found: [] }, []));
-    expect(written(restore(() => source).circuit)).toEqual(written(circuit));
+    const again = restore(() => source).circuit;
+    expect(written(again)).toEqual(written(circuit));
+    const table = circuit.tables.definitions[0]!;
+    const { diagram } = again.tables.definitions[0]!.three;
+    expect(diagram.plain()).toEqual(table.three.diagram.plain());
+    expect(diagram.walk(table.three.settled, (variable) => [1, 0, 2, 2][variable]!)).toBe(1);
   });
 });

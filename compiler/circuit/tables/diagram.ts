@@ -7,6 +7,16 @@ export const Leaf = { Zero: 0, One: 1, Unknown: 2, Hold: 3 } as const;
 const HOLD = Leaf.Hold;
 const FIRST_NODE = 4;
 
+/** A diagram as plain data, to be kept or sent elsewhere. */
+export interface PlainDiagram {
+  readonly order: readonly number[];
+  readonly values: ValueCount;
+  /** Per node. */
+  readonly variable: readonly number[];
+  /** Three per node. */
+  readonly branches: readonly number[];
+}
+
 /** The values that a variable of a diagram can have: 0 and 1, or x (2) too. */
 export type ValueCount = 2 | 3;
 
@@ -22,6 +32,7 @@ export class Diagram {
   readonly values: ValueCount;
   /** The variable that is the state before, which the leaf `Hold` stands for. */
   readonly state: number;
+  readonly #order: readonly number[];
   readonly #rank: Uint8Array;
   readonly #variable: number[] = [];
   readonly #branches: number[] = [];
@@ -30,9 +41,27 @@ export class Diagram {
   /** `order` has all variables in the order in which they are asked for, the state last. */
   constructor(order: readonly number[], values: ValueCount) {
     this.values = values;
+    this.#order = order;
     this.state = order.at(-1)!;
     this.#rank = new Uint8Array(order.length);
     for (const [rank, variable] of order.entries()) this.#rank[variable] = rank;
+  }
+
+  /** The diagram that `plain` was made of: the same numbers are the same functions. */
+  static of({ order, values, variable, branches }: PlainDiagram): Diagram {
+    const diagram = new Diagram(order, values);
+    for (const [index, asked] of variable.entries()) {
+      const [zero, one, unknown] = branches.slice(index * 3, index * 3 + 3);
+      diagram.#add(asked, [zero!, one!, unknown!]);
+    }
+    return diagram;
+  }
+
+  plain(): PlainDiagram {
+    return {
+      ...{ order: this.#order, values: this.values },
+      ...{ variable: this.#variable, branches: this.#branches },
+    };
   }
 
   /** Whether a function still depends on something, its state before included. */
@@ -67,12 +96,13 @@ export class Diagram {
       if (this.values === 2) branches[2] = branches[0]!;
     }
     if (branches.every((ref) => ref === branches[0])) return branches[0]!;
-    const key = `${variable} ${branches.join(' ')}`;
-    const known = this.#known.get(key);
-    if (known !== undefined) return known;
+    return this.#known.get(keyOf(variable, branches)) ?? this.#add(variable, branches);
+  }
+
+  #add(variable: number, branches: readonly number[]): number {
     const made = this.#variable.push(variable) - 1 + FIRST_NODE;
     this.#branches.push(...branches);
-    this.#known.set(key, made);
+    this.#known.set(keyOf(variable, branches), made);
     return made;
   }
 
@@ -165,3 +195,6 @@ export class Diagram {
     return at === HOLD ? valueAt(this.state) : at;
   }
 }
+
+const keyOf = (variable: number, branches: readonly number[]): string =>
+  `${variable} ${branches.join(' ')}`;
