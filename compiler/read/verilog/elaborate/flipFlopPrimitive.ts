@@ -71,7 +71,10 @@ function movingInput(
   return behaviour.live.find((input) =>
     still.some((levels) => {
       if (input === clock.input && ((levels >> input) & 1) === clock.value) return false;
-      return behaviour.next(input, levels, 0) !== '0' || behaviour.next(input, levels, 1) !== '1';
+      return [0, 1].some((state) => {
+        const next = behaviour.next(input, levels, state);
+        return next !== undefined && next !== String(state);
+      });
     }),
   );
 }

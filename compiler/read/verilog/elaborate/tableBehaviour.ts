@@ -6,7 +6,12 @@ export interface InputEdge {
   readonly value: 0 | 1;
 }
 
-/** What a sequential table does with its state, told for inputs that change one at a time. */
+/**
+ * What a sequential table does with its state, told for inputs that change one at a time.
+ *
+ * A change from levels that would have given another state never comes: a row for the end of a
+ * reset may be for 0 alone, `? b (?1) : 0 : 0`. What the table leaves open there is left open.
+ */
 export class TableBehaviour {
   readonly inputs: number;
   /** Inputs that do something: all but the notifiers. */
@@ -50,15 +55,24 @@ export class TableBehaviour {
     );
   }
 
-  /** The next state when an input has changed and the levels are now these. */
-  next(input: number, levels: number, state: number): Outcome {
+  /**
+   * The next state when an input has changed and the levels are now these; undefined if the levels
+   * before would have given another state.
+   */
+  next(input: number, levels: number, state: number): Outcome | undefined {
+    const before = this.forced(levels ^ (1 << input));
+    if (before !== undefined && before !== 'x' && before !== resolved('-', state)) return undefined;
     return resolved(this.#table.event(input, levels, state), state);
   }
 
   /** The next state whichever input has changed; undefined if that makes a difference. */
   steady(levels: number, state: number): Outcome | undefined {
-    const [first, ...others] = this.live.map((input) => this.next(input, levels, state));
-    return others.every((other) => other === first) ? first : undefined;
+    const forced = this.forced(levels);
+    if (forced !== undefined) return forced;
+    const outcomes = new Set(this.live.map((input) => this.next(input, levels, state)));
+    const isLeftOpen = outcomes.delete(undefined);
+    if (outcomes.size === 0 && isLeftOpen) return resolved('-', state);
+    return outcomes.size === 1 ? [...outcomes][0] : undefined;
   }
 
   /** The edges that give the state a new value which the levels alone would not. */
@@ -83,7 +97,7 @@ export class TableBehaviour {
     const given = new Set<Outcome>();
     for (const levels of this.combinations()) {
       if (((levels >> input) & 1) !== value || this.forced(levels) !== undefined) continue;
-      for (const state of [0, 1]) given.add(this.next(input, levels, state));
+      for (const state of [0, 1]) given.add(this.next(input, levels, state) ?? '-');
     }
     return given.has('0') && given.has('1');
   }
