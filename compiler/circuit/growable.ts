@@ -1,5 +1,9 @@
 const LONG = 4096;
 
+// So many entries are copied at once, since that has a cost of its own. V8 also compiles a loop
+// that runs for long by itself, and falls out of that code at each later call of its function.
+const MANY = 256;
+
 /** A list of unsigned 32-bit numbers that grows in place: four bytes an entry, no objects. */
 export class GrowableUint32 {
   #data: Uint32Array;
@@ -38,7 +42,8 @@ export class GrowableUint32 {
     const end = this.#length + count;
     if (end > this.#data.length) this.#grow(end);
     const data = this.#data;
-    for (let at = this.#length; at < end; at++) data[at] = value;
+    if (count > MANY) data.fill(value, this.#length, end);
+    else for (let at = this.#length; at < end; at++) data[at] = value;
     this.#length = end;
   }
 
@@ -47,7 +52,9 @@ export class GrowableUint32 {
     const end = this.#length + count;
     if (end > this.#data.length) this.#grow(end);
     const data = this.#data;
-    for (let i = 0, to = this.#length; i < count; i++) data[to++] = values[i]!;
+    if (count > MANY && values instanceof Uint32Array) {
+      data.set(values.subarray(0, count), this.#length);
+    } else for (let i = 0, to = this.#length; i < count; i++) data[to++] = values[i]!;
     this.#length = end;
   }
 

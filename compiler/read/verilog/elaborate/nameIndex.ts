@@ -12,7 +12,7 @@ export class NameIndex {
   #slots: Uint32Array;
   #count = 0;
   #greatest = 0;
-  /** In place of the hash table: the number of each name, -1 for none. */
+  /** In place of the hash table: one more than the number of each name, 0 for none. */
   #dense: Int32Array | undefined;
 
   constructor(capacity = 4) {
@@ -22,7 +22,7 @@ export class NameIndex {
   /** The number of a name, or -1 if it has none. */
   get(name: NameId): number {
     const dense = this.#dense;
-    if (dense !== undefined) return name < dense.length ? dense[name]! : -1;
+    if (dense !== undefined) return name < dense.length ? dense[name]! - 1 : -1;
     const slot = this.#slot(name);
     return this.#slots[slot] === name ? this.#slots[slot + 1]! : -1;
   }
@@ -33,7 +33,7 @@ export class NameIndex {
     if (name > this.#greatest) this.#greatest = name;
     if (this.#dense !== undefined) {
       if (name >= this.#dense.length) this.#dense = longer(this.#dense, 2 * name);
-      this.#dense[name] = value;
+      this.#dense[name] = value + 1;
       return;
     }
     const slot = this.#slot(name);
@@ -60,7 +60,8 @@ export class NameIndex {
     const old = this.#slots;
     if (this.#count >= LEAST_DENSE && this.#greatest < SPARSITY * this.#count) {
       const dense = longer(new Int32Array(0), 2 * this.#greatest);
-      for (let i = 0; i < old.length; i += 2) if (old[i] !== EMPTY) dense[old[i]!] = old[i + 1]!;
+      for (let i = 0; i < old.length; i += 2)
+        if (old[i] !== EMPTY) dense[old[i]!] = old[i + 1]! + 1;
       this.#dense = dense;
       this.#slots = new Uint32Array(0);
       return;
@@ -76,7 +77,7 @@ export class NameIndex {
 }
 
 function longer(list: Int32Array, length: number): Int32Array {
-  const made = new Int32Array(length).fill(-1);
+  const made = new Int32Array(length);
   made.set(list);
   return made;
 }

@@ -25,7 +25,6 @@ export function nameInstances(body: ModuleBody): void {
   const table = body.module.instances;
   let number = 0;
   for (const { scope, item } of body.instances) {
-    if (item.count >= MANY) scope.symbols.reserve(item.count);
     for (let instance = item.first; instance < item.first + item.count; instance++) {
       const value = table.module(instance) < 0 ? NOT_PLACED : number++;
       const name = table.name(instance);

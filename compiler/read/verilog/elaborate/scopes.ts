@@ -68,11 +68,16 @@ function declareNames(
 
 /** Makes room for the names of a flat netlist, of which there may be a million. */
 function reserve(body: ModuleBody, scope: BlockScope, items: readonly Item[]): void {
-  let names = 0;
-  for (const item of items) if (item.kind === 'declaration') names += item.names.length;
-  if (names < MANY) return;
-  scope.symbols.reserve(names);
-  body.builder.reserve(body.builder.netCount + names);
+  let nets = 0;
+  let instances = 0;
+  for (const item of items) {
+    if (item.kind === 'declaration') nets += item.names.length;
+    else if (item.kind === 'instances') instances += item.count;
+  }
+  if (nets + instances < MANY) return;
+  scope.symbols.reserve(nets + instances);
+  // Some of them have several bits.
+  body.builder.reserve(body.builder.netCount + Math.ceil(1.25 * nets));
 }
 
 const expandItems: ExpandItems = (body, scope, items) => {

@@ -2,7 +2,15 @@ import type { CircuitBuilder } from '../../../circuit/builder.js';
 import { GateKind } from '../../../circuit/gates.js';
 import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
 import type { NameId } from '../../names.js';
-import { BUS_PART, BusPin, DROPPED, type Origin, Pin, unpackAttributes } from './recording.js';
+import {
+  BUS_PART,
+  BusPin,
+  DROPPED,
+  type Origin,
+  Pin,
+  type Recording,
+  unpackAttributes,
+} from './recording.js';
 import { MemoryStamper, type PlacedMemory } from './stampMemories.js';
 import type { Template } from './template.js';
 
@@ -140,11 +148,33 @@ export class Stamper {
   }
 
   /** Makes the nets that are not connected yet, and all drivers. */
-  #fill({ template, nets, origin }: Frame): void {
+  #fill(frame: Frame): void {
+    const { template, nets, origin } = frame;
+    const { tables } = template.recording;
+    if (origin !== undefined) this.#builder.at(origin.source, origin.offset);
+    this.#makeNets(frame);
+    // What drives each net, for tables: another driver of a bus may have come first.
+    const driven = tables.length > 0 ? new Map<number, NetId>() : undefined;
+    this.#makeDrivers(frame, driven);
+    for (const { output, inputs, table } of tables) {
+      const own = inputs.map((net) => netId(nets[net]!));
+      this.#builder.table(driven!.get(nets[output]!)!, own, table);
+    }
+    for (const [net, value] of template.farInitials ?? []) {
+      // What a module further out says wins; it has been stamped before.
+      const own = nets[net]!;
+      if (!this.#farInitials.has(own)) this.#farInitials.set(own, value);
+    }
+    for (const [net, type] of template.netTypes ?? []) {
+      this.#builder.setNetType(netId(nets[net]!), type);
+    }
+  }
+
+  #makeNets({ template, nets, origin }: Frame): void {
     const { recording, canonical, unused } = template;
     const builder = this.#builder;
-    if (origin !== undefined) builder.at(origin.source, origin.offset);
-    for (let net = 0; net < recording.netCount; net++) {
+    const count = recording.netCount;
+    for (let net = 0; net < count; net++) {
       const older = canonical === undefined ? net : (canonical[net] ?? net);
       if (older !== net) {
         nets[net] = nets[older]!;
@@ -153,26 +183,17 @@ export class Stamper {
         nets[net] = builder.net();
       }
     }
-    // What drives each net, for tables: another driver of a bus may have come first.
-    const driven = recording.tables.length > 0 ? new Map<number, NetId>() : undefined;
-    for (let driver = 0; driver < recording.driverCount; driver++) {
+  }
+
+  #makeDrivers({ template, nets, origin }: Frame, driven: Map<number, NetId> | undefined): void {
+    const { recording } = template;
+    const count = recording.driverCount;
+    for (let driver = 0; driver < count; driver++) {
       if (origin === undefined) {
-        builder.at(recording.driverSource(driver), recording.driverOffset(driver));
+        this.#builder.at(recording.driverSource(driver), recording.driverOffset(driver));
       }
       const net = this.#drive(template, nets, driver);
       if (net !== NO_NET) driven?.set(nets[recording.driverOutput(driver)]!, net);
-    }
-    for (const { output, inputs, table } of recording.tables) {
-      const own = inputs.map((net) => netId(nets[net]!));
-      builder.table(driven!.get(nets[output]!)!, own, table);
-    }
-    for (const [net, value] of template.farInitials ?? []) {
-      // What a module further out says wins; it has been stamped before.
-      const own = nets[net]!;
-      if (!this.#farInitials.has(own)) this.#farInitials.set(own, value);
-    }
-    for (const [net, type] of template.netTypes ?? []) {
-      builder.setNetType(netId(nets[net]!), type);
     }
   }
 
@@ -196,12 +217,7 @@ export class Stamper {
     return this.#builder.drive(output, kind as GateKind, fanin);
   }
 
-  #driveState(
-    recording: Template['recording'],
-    driver: number,
-    output: NetId,
-    nets: Uint32Array,
-  ): NetId {
+  #driveState(recording: Recording, driver: number, output: NetId, nets: Uint32Array): NetId {
     const start = recording.faninStart(driver);
     const pins = this.#translated(recording, nets, start, Pin.Attributes);
     const { edge, priority, initial } = unpackAttributes(recording.faninAt(start + Pin.Attributes));
@@ -218,7 +234,7 @@ export class Stamper {
 
   /** A stretch of the fan-in list in nets of the circuit; overwritten by the next call. */
   #translated(
-    recording: Template['recording'],
+    recording: Recording,
     nets: Uint32Array,
     start: number,
     count: number,

@@ -64,22 +64,36 @@ export interface NewSymbol {
 
 // One record of numbers per symbol: a generate loop makes thousands of small tables, where a
 // column for each field would cost far more than what it holds.
-const Field = { Name: 0, Traits: 1, Value: 2, Start: 3, End: 4, Msb: 5, Lsb: 6 } as const;
-const RECORD = 7;
+const Field = { Name: 0, Traits: 1, Value: 2, Start: 3 } as const;
+const RECORD = 4;
 
 /** Names in a table that has no index. */
 const SHORT = 8;
 
-// `Traits` holds the kind in its lowest byte, then the flags, then the net class.
+// `Traits` holds the kind in its lowest bits and whether there is a `Rarity`, then the flags, the
+// net class and the length of the text; of a greater length, the `Rarity` tells the end.
+const KIND = 0x7f;
+const RARE = 0x80;
 const FLAGS = 8;
 const CLASS = 16;
+const LENGTH = 20;
 const BYTE = 0xff;
+const NIBBLE = 0xf;
+const MOST_LENGTH = (1 << (32 - LENGTH)) - 1;
 
-/** The names of one scope: twenty-eight bytes a symbol, so that a module may have a million. */
+/** What the records have no room for: by far the most symbols of a netlist are short scalars. */
+interface Rarity {
+  readonly msb: number;
+  readonly lsb: number;
+  readonly end: Position;
+}
+
+/** The names of one scope: sixteen bytes a scalar, so that a module may have a million. */
 export class SymbolTable {
   /** Only of a table that has become too long for looking at each of its names. */
   #index: NameIndex | undefined;
   readonly #records = new GrowableUint32(2 * RECORD);
+  #rarities: Map<number, Rarity> | undefined;
   #count = 0;
 
   get count(): number {
@@ -112,8 +126,7 @@ export class SymbolTable {
     const traits = records.get(at + Field.Traits);
     if ((traits & BYTE) !== SymbolKind.Signal) return -1;
     if (drives && ((traits >> FLAGS) & Flag.Variable) !== 0) return -1;
-    const isScalar = records.get(at + Field.Msb) === records.get(at + Field.Lsb);
-    return isScalar ? records.get(at + Field.Value) : -1;
+    return records.get(at + Field.Value);
   }
 
   /** Adds a symbol; the name must be new. */
@@ -122,14 +135,19 @@ export class SymbolTable {
     const { flags = 0, netClass = NetClass.Plain, msb = 0, lsb = 0 } = symbol;
     if (this.#index === undefined && id === SHORT) this.#makeIndex();
     this.#index?.set(symbol.name, id);
+    const { start, end } = symbol;
+    const length = end - start;
+    const isRare = msb !== 0 || lsb !== 0 || length < 0 || length > MOST_LENGTH;
+    if (isRare) {
+      this.#rarities ??= new Map();
+      this.#rarities.set(id, { msb, lsb, end });
+    }
+    const kind = symbol.kind | (isRare ? RARE : 0);
     const records = this.#records;
     records.push(symbol.name);
-    records.push(symbol.kind | (flags << FLAGS) | (netClass << CLASS));
+    records.push(kind | (flags << FLAGS) | (netClass << CLASS) | (isRare ? 0 : length << LENGTH));
     records.push(symbol.value);
-    records.push(symbol.start);
-    records.push(symbol.end);
-    records.push(msb);
-    records.push(lsb);
+    records.push(start);
     return id;
   }
 
@@ -139,7 +157,7 @@ export class SymbolTable {
 
   /** A `SymbolKind`. */
   kind(symbol: number): number {
-    return this.#get(symbol, Field.Traits) & BYTE;
+    return this.#get(symbol, Field.Traits) & KIND;
   }
 
   value(symbol: number): number {
@@ -152,7 +170,8 @@ export class SymbolTable {
 
   /** End of the name's text, or its start where only a message needs to find it out. */
   end(symbol: number): Position {
-    return this.#get(symbol, Field.End);
+    const length = this.#get(symbol, Field.Traits) >>> LENGTH;
+    return this.#rarity(symbol)?.end ?? this.start(symbol) + length;
   }
 
   /** `Flag` bits. */
@@ -166,27 +185,33 @@ export class SymbolTable {
 
   /** A `NetClass`. */
   netClass(symbol: number): number {
-    return this.#get(symbol, Field.Traits) >> CLASS;
+    return (this.#get(symbol, Field.Traits) >> CLASS) & NIBBLE;
   }
 
   setNetClass(symbol: number, netClass: number): void {
-    const others = this.#get(symbol, Field.Traits) & ((1 << CLASS) - 1);
+    const others = this.#get(symbol, Field.Traits) & ~(NIBBLE << CLASS);
     this.#set(symbol, Field.Traits, others | (netClass << CLASS));
   }
 
   /** Declared left index, also of a parameter's bits; 0 for a scalar. */
   msb(symbol: number): number {
-    return this.#get(symbol, Field.Msb) | 0;
+    return this.#rarity(symbol)?.msb ?? 0;
   }
 
   /** Declared right index, also of a parameter's bits; 0 for a scalar. */
   lsb(symbol: number): number {
-    return this.#get(symbol, Field.Lsb) | 0;
+    return this.#rarity(symbol)?.lsb ?? 0;
   }
 
   /** Number of bits: of a signal, or of one word of a memory. */
   width(symbol: number): number {
-    return Math.abs(this.msb(symbol) - this.lsb(symbol)) + 1;
+    const rarity = this.#rarity(symbol);
+    return rarity === undefined ? 1 : Math.abs(rarity.msb - rarity.lsb) + 1;
+  }
+
+  #rarity(symbol: number): Rarity | undefined {
+    if ((this.#get(symbol, Field.Traits) & RARE) === 0) return undefined;
+    return this.#rarities!.get(symbol);
   }
 
   #makeIndex(): void {
