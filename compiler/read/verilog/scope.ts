@@ -136,6 +136,8 @@ export interface Elaboration {
   readonly initialValues: Map<NetId, 0 | 1>;
   /** Lets a process drive a bit of a variable, which may be z; absent where no process is built. */
   driveFloating?(net: NetId, bit: FloatingBit): void;
+  /** Tells that what drives a bit of a variable next hands on a net as it is, z too. */
+  noteCopy?(variable: NetId, net: NetId): void;
   /** Finds a data file named in the source at a position; undefined if there is none. */
   readData?(path: string, from: Position): Source | undefined;
   /**

@@ -13,6 +13,7 @@ import { isPowerUp } from './powerUp.js';
 import { isAccessible } from './selects.js';
 import type { WriteMode } from './store.js';
 import { type Piece, type Place, targetPieces, targetWidth } from './targets.js';
+import { isBare } from './walk.js';
 import { shapeOf } from './widths.js';
 
 /** Executes `target = value` or `target <= value` (clause 9.2). */
@@ -28,7 +29,10 @@ export function assignExpression(
   const width = targetWidth(pieces);
   if (context.access === 'all' && mayFloat(value, context)) {
     writeFloating(pieces, lowerFloating(value, context, width), context, mode);
-  } else writePieces(pieces, lowerAssigned(value, context, width), context, mode);
+  } else {
+    const isCopy = context.access === 'all' && isBare(value) ? true : undefined;
+    writePieces(pieces, lowerAssigned(value, context, width), context, { ...mode, isCopy });
+  }
 }
 
 /** Assigns a number to a variable, where both can be seen at once; that of a loop's index mostly. */

@@ -5,6 +5,7 @@ import { knownOf, resize, unknownBits } from './bits.js';
 import type { CallExpression, Context, Exits, RoutineBinding } from './context.js';
 import { LATER, Sequence } from './exits.js';
 import { lowerAssigned } from './expressions.js';
+import { lowerFloating, mayFloat } from './floating.js';
 import type { FloatingBits } from './floatingBits.js';
 import { LocalScope } from './localScope.js';
 import { declareLocals, localVariable, rangeOfType } from './locals.js';
@@ -145,20 +146,38 @@ function bindArguments(
   const values = declared.map(({ direction, variable }, i) =>
     direction === 'output'
       ? undefined
-      : lowerAssigned(call.arguments[i]!, context, variable.nets.length),
+      : lowerArgument(call.arguments[i]!, context, variable.nets.length),
   );
-  values.forEach((bits, i) => {
+  values.forEach((value, i) => {
     const { nets } = declared[i]!.variable;
     context.scope.shared.budget.spend(nets.length >>> 2);
     const mode = blockingAt(call.arguments[i]!.start);
-    if (bits === undefined) return;
-    const known = bits.length === nets.length ? knownOf(bits, context.logic) : undefined;
+    if (value === undefined) return;
+    const { bits, driven } = value;
+    const isWhole = bits.length === nets.length && driven === undefined;
+    const known = isWhole ? knownOf(bits, context.logic) : undefined;
     if (known?.unknown === 0n && context.store.writeKnown(nets, known.value, mode)) return;
     resize(bits, nets.length, false, context.logic).forEach((bit, k) => {
-      context.store.write(nets[k]!, bit, context.logic.one, mode);
+      context.store.write(nets[k]!, bit, context.logic.one, mode, driven?.[k]);
     });
   });
   return declared;
+}
+
+/** An argument's bits; `driven`, if given, is 0 for those that are z. */
+function lowerArgument(
+  expression: Expression,
+  context: Context,
+  width: number,
+): { readonly bits: Bits; readonly driven?: Bits } {
+  if (context.access !== 'all' || !mayFloat(expression, context)) {
+    return { bits: lowerAssigned(expression, context, width) };
+  }
+  const floating = lowerFloating(expression, context, width);
+  return {
+    bits: floating.map(({ data }) => data),
+    driven: floating.map(({ enable }) => enable),
+  };
 }
 
 function declaredArguments(

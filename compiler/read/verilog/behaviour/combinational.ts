@@ -37,7 +37,8 @@ export function lowerCombinational(
   warnLatches(body, latched, changes.size, context);
 }
 
-function driveEntry(key: NetId, { value, driven }: Entry, context: Context): void {
+function driveEntry(key: NetId, { value, driven, isCopy }: Entry, context: Context): void {
+  if (isCopy) context.scope.shared.noteCopy?.(key, value);
   if (driven === undefined) driveBit(key, value, context);
   else {
     placeOf(key, context);

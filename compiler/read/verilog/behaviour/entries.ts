@@ -5,12 +5,13 @@ import { selectFrom } from './tables.js';
 
 /**
  * What was assigned to one bit: a value, and the condition under which it was. Where `driven` is 0
- * the value is z; it is absent where the value never is.
+ * the value is z; it is absent where the value never is. A copy hands on the z of a net.
  */
 export interface Entry {
   readonly value: NetId;
   readonly assigned: NetId;
   readonly driven?: NetId;
+  readonly isCopy?: true;
 }
 
 /** The entry `one` where a condition is 1, else `zero`; `assigned` is the condition of the result. */

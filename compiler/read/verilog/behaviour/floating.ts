@@ -1,18 +1,27 @@
 import type { NetId } from '../../../circuit/ids.js';
-import type { Expression, NameExpression, NumberExpression, RoutineItem } from '../syntax.js';
+import type { SignalBinding } from '../scope.js';
+import type {
+  Expression,
+  NameExpression,
+  NumberExpression,
+  PartExpression,
+  RoutineItem,
+  SelectExpression,
+} from '../syntax.js';
 import type { CallExpression, Context } from './context.js';
 import { lower, lowerCondition } from './expressions.js';
 import { chosenBit, type FloatingBits, resizeFloating } from './floatingBits.js';
 import { resolveCalled } from './localScope.js';
 import { meaningOf } from './names.js';
+import { readFloating } from './selects.js';
 import { isSystemName } from './systemFunctions.js';
 import { walk } from './walk.js';
 import { shapeOf } from './widths.js';
 
 /**
  * Whether an expression hands on a z that is written in it: as it stands, by a conditional, inside
- * a concatenation, as what a variable was assigned before or as the value of a function. Any other
- * operator makes x of z (IEEE 1364-2005, clause 5.1), and so does a parameter here.
+ * a concatenation, as what a variable was assigned before, or part of it, or by a function as its
+ * value. Any other operator makes x of z (IEEE 1364-2005, clause 5.1), and so does a parameter here.
  */
 export function mayFloat(expression: Expression, context: Context): boolean {
   // An explicit stack: conditionals are chained by the hundred.
@@ -30,10 +39,13 @@ export function mayFloat(expression: Expression, context: Context): boolean {
         pending.push(...node.parts);
         break;
       case 'name':
-        if (floatingNets(node, context) !== undefined) return true;
+      case 'select':
+      case 'part':
+        if (holdsZ(node, context)) return true;
         break;
       case 'call':
         if (givesZ(node, context)) return true;
+        pending.push(...node.arguments);
         break;
     }
   }
@@ -57,16 +69,20 @@ export function lowerFloating(
   return floating(expression, context, full, shape.signed).slice(0, width);
 }
 
-// Nets of a variable of which this process has assigned z to some.
-function floatingNets(
-  expression: Extract<Expression, { kind: 'name' }>,
+// Whether an expression is a variable, or part of one, of which this process has assigned z to bits.
+function holdsZ(
+  expression: NameExpression | SelectExpression | PartExpression,
   context: Context,
-): readonly NetId[] | undefined {
+): boolean {
   const { store } = context;
-  if (!store.mayFloatAtAll) return undefined;
-  const binding = meaningOf(expression, context);
-  if (binding?.kind !== 'signal') return undefined;
-  return binding.nets.some((net) => store.mayFloat(net)) ? binding.nets : undefined;
+  if (!store.mayFloatAtAll) return false;
+  let name: Expression = expression;
+  while (name.kind !== 'name') name = name.base;
+  const binding = meaningOf(name, context);
+  if (binding?.kind === 'memory') {
+    return binding.words.some((word) => word.some((net) => store.mayFloat(net)));
+  }
+  return binding?.kind === 'signal' && binding.nets.some((net) => store.mayFloat(net));
 }
 
 const routinesGivingZ = new WeakMap<RoutineItem, boolean>();
@@ -129,8 +145,11 @@ function floatingKind(
     }
     case 'call':
       return resizeFloating(context.services.call(expression, context), width, signed, logic);
+    case 'select':
+    case 'part':
+      return resizeFloating(readFloating(expression, context), width, signed, logic);
     default: {
-      const nets = floatingNets(expression as NameExpression, context)!;
+      const { nets } = meaningOf(expression as NameExpression, context) as SignalBinding;
       const bits = nets.map((net) => context.store.readFloating(net));
       return resizeFloating(bits, width, signed, logic);
     }

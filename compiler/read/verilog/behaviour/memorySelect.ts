@@ -101,17 +101,25 @@ function placesOf(
   }));
 }
 
+/** What is read of nets, and what there is where there is no net. */
+interface NetView {
+  readonly bit: (net: NetId) => NetId;
+  readonly outside: NetId;
+}
+
 /** The word that indices mean out of words that are nets, by a tree of multiplexers. */
 export function readNets(
   memory: MemoryBinding,
   values: readonly IndexValue[],
-  context: Context,
+  view: NetView,
+  logic: Logic,
 ): Bits {
-  const { logic, store } = context;
-  const readers = values.map((value, i) => indexReader(value, memory.indices[i]!, logic));
+  const readers = values.map((value, i) =>
+    indexReader(value, memory.indices[i]!, view.outside, logic),
+  );
   const read = (bit: number, at: number, word: number): NetId => {
     const reader = readers[at];
-    if (reader === undefined) return store.read(memory.words[word]![bit]!);
+    if (reader === undefined) return view.bit(memory.words[word]![bit]!);
     const { low, high } = memory.indices[at]!;
     const first = word * (high - low + 1);
     return reader((place) => read(bit, at + 1, first + place));
@@ -121,13 +129,18 @@ export function readNets(
 
 type IndexReader = (leaf: (place: number) => NetId) => NetId;
 
-function indexReader(value: IndexValue, { low, high }: IndexRange, logic: Logic): IndexReader {
+function indexReader(
+  value: IndexValue,
+  { low, high }: IndexRange,
+  outside: NetId,
+  logic: Logic,
+): IndexReader {
   if (value.kind === 'constant') return (leaf) => leaf(value.value - low);
-  if (value.kind === 'unknown') return () => logic.unknown;
+  if (value.kind === 'unknown') return () => outside;
   const index = indexOf(value.bits, value.signed, low, high, logic);
   return (leaf) => {
-    const inside = (i: number): NetId => (i < low || i > high ? logic.unknown : leaf(i - low));
-    return readWindow(index, 1, inside, logic)[0]!;
+    const inside = (i: number): NetId => (i < low || i > high ? outside : leaf(i - low));
+    return readWindow(index, 1, inside, logic, outside)[0]!;
   };
 }
 

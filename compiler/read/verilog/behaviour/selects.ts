@@ -3,6 +3,7 @@ import type { MemoryBinding, SignalBinding } from '../scope.js';
 import type { Expression, NameExpression, PartExpression, SelectExpression } from '../syntax.js';
 import { bitsOf, unknownBits } from './bits.js';
 import type { Context } from './context.js';
+import type { FloatingBits } from './floatingBits.js';
 import { heldPlace, readHeld } from './heldMemory.js';
 import { type IndexValue, indexValue, warnOutside } from './indexValue.js';
 import type { Bits, Logic } from './logic.js';
@@ -28,21 +29,53 @@ interface Vector {
   readonly lsb: number;
   /** Value of the bit at a place counted from the right, from 0. */
   readonly at: (position: number) => NetId;
+  /** What there is beside the bits. */
+  readonly outside: NetId;
 }
+
+/** What is read of the bits that are selected: their values, or of bits that may be z one half. */
+interface View {
+  bit(net: NetId, context: Context): NetId;
+  /** What there is where the declaration has no bit. */
+  outside(logic: Logic): NetId;
+}
+
+const values: View = {
+  bit: (net, { store }) => store.read(net),
+  outside: (logic) => logic.unknown,
+};
+const data: View = { ...values, bit: (net, { store }) => store.readFloating(net).data };
+const enables: View = {
+  bit: (net, { store }) => store.readFloating(net).enable,
+  outside: (logic) => logic.one,
+};
 
 /** Place from the right of a bit by its declared number; not in 0 … width-1 if there is none. */
 export function positionOf(vector: { msb: number; lsb: number }, index: number): number {
   return vector.msb >= vector.lsb ? index - vector.lsb : vector.lsb - index;
 }
 
+/** What is selected of a variable of which bits may be z. */
+export function readFloating(
+  expression: SelectExpression | PartExpression,
+  context: Context,
+): FloatingBits {
+  const read = (view: View): Bits =>
+    expression.kind === 'select'
+      ? readSelect(expression, context, view)
+      : readPart(expression, context, view);
+  const enable = read(enables);
+  return read(data).map((net, bit) => ({ data: net, enable: enable[bit]! }));
+}
+
 /** The value of `a[i]`: a bit, or a word of a memory. */
-export function readSelect(expression: SelectExpression, context: Context): Bits {
+export function readSelect(expression: SelectExpression, context: Context, view = values): Bits {
   const word = wordSelectOf(expression, context);
-  if (word !== undefined) return readWord(word, context) ?? unknownBits(1, context.logic);
-  const vector = vectorOf(expression.base, context);
+  if (word !== undefined) return readWord(word, context, view) ?? unknownBits(1, context.logic);
+  const vector = vectorOf(expression.base, context, view);
   if (vector === undefined) return unknownBits(1, context.logic);
   const index = indexValue(expression.index, context);
-  if (index.kind === 'unknown') return unknownBits(1, context.logic);
+  if (index.kind === 'unknown') return [vector.outside];
   if (index.kind === 'constant') {
     return readFrom(vector, positionOf(vector, index.value), 1, expression, context);
   }
@@ -50,11 +83,11 @@ export function readSelect(expression: SelectExpression, context: Context): Bits
 }
 
 /** The value of a part select. */
-export function readPart(expression: PartExpression, context: Context): Bits {
-  const part = partOf(expression, vectorOf(expression.base, context), context);
+export function readPart(expression: PartExpression, context: Context, view = values): Bits {
+  const part = partOf(expression, vectorOf(expression.base, context, view), context);
   if (part === undefined) return unknownBits(shapeOf(expression, context).width, context.logic);
   const { vector, width, index, offset } = part;
-  if (index.kind === 'unknown') return unknownBits(width, context.logic);
+  if (index.kind === 'unknown') return new Array<NetId>(width).fill(vector.outside);
   if (index.kind === 'variable') {
     const moving = readMoving(vector, index, offset, width, context.logic);
     return context.logic.strictly(moving, index.bits);
@@ -105,13 +138,18 @@ export function partOf<V extends { msb: number; lsb: number }>(
 }
 
 /** What a bit or part is selected from, named or a word of a memory. */
-function vectorOf(base: NameExpression | SelectExpression, context: Context): Vector | undefined {
+function vectorOf(
+  base: NameExpression | SelectExpression,
+  context: Context,
+  view: View,
+): Vector | undefined {
+  const outside = view.outside(context.logic);
   const select = wordSelectOf(base, context);
   if (select !== undefined) {
-    const word = readWord(select, context);
+    const word = readWord(select, context, view);
     if (word === undefined) return undefined;
     const { msb, lsb } = select.memory;
-    return { width: word.length, msb, lsb, at: (i) => word[i]! };
+    return { width: word.length, msb, lsb, at: (i) => word[i]!, outside };
   }
   let name: Expression = base;
   while (name.kind === 'select') name = name.base;
@@ -121,13 +159,13 @@ function vectorOf(base: NameExpression | SelectExpression, context: Context): Ve
   if (base.kind === 'name' && binding?.kind === 'parameter') {
     const { value, msb, lsb } = binding;
     const bits = bitsOf(value, value.width, context.logic);
-    return { width: value.width, msb, lsb, at: (i) => bits[i]! };
+    return { width: value.width, msb, lsb, at: (i) => bits[i]!, outside };
   }
   if (base.kind === 'name' && binding?.kind === 'signal') {
     if (binding.isVector && mayRead(base, binding, context)) {
       const { msb, lsb, nets } = binding;
-      const at = (i: number): NetId => context.store.read(nets[i]!);
-      return { width: nets.length, msb, lsb, at };
+      const at = (i: number): NetId => view.bit(nets[i]!, context);
+      return { width: nets.length, msb, lsb, at, outside };
     }
     if (binding.isVector) return undefined;
   }
@@ -169,19 +207,22 @@ export function isAccessible(binding: SignalBinding | MemoryBinding, { access }:
   return (first ?? 0) < 0;
 }
 
-function readWord(select: WordSelect, context: Context): Bits | undefined {
+function readWord(select: WordSelect, context: Context, view: View): Bits | undefined {
   const { memory, name } = select;
   if (!mayRead(name, memory, context)) return undefined;
-  const values = indexValues(select, context);
-  if (typeof values === 'string') return unknownBits(wordWidth(memory), context.logic);
-  const word = constantWord(memory, values);
+  const where = indexValues(select, context);
+  const outside = view.outside(context.logic);
+  if (typeof where === 'string') return new Array<NetId>(wordWidth(memory)).fill(outside);
+  const word = constantWord(memory, where);
   if (memory.held !== undefined) {
-    return readHeld(heldPlace(memory, memory.held, values, context), context, word);
+    return readHeld(heldPlace(memory, memory.held, where, context), context, word);
   }
-  if (word !== undefined) return memory.words[word]!.map((net) => context.store.read(net));
+  if (word !== undefined) return memory.words[word]!.map((net) => view.bit(net, context));
   if (!withinMemoryLimit(select, context)) return undefined;
-  const indices = values.flatMap((value) => (value.kind === 'variable' ? [value.bits] : []));
-  return context.logic.strictly(readNets(memory, values, context), ...indices);
+  const indices = where.flatMap((value) => (value.kind === 'variable' ? [value.bits] : []));
+  const bit = (net: NetId): NetId => view.bit(net, context);
+  const bits = readNets(memory, where, { bit, outside }, context.logic);
+  return context.logic.strictly(bits, ...indices);
 }
 
 /** Bits from a fixed place on; x, and a warning, for those that are not there. */
@@ -195,7 +236,7 @@ function readFrom(
   if (start < 0 || start + width > vector.width) {
     warnOutside(place, vector.msb, vector.lsb, context);
   }
-  return Array.from({ length: width }, (_, i) => bitAt(vector, start + i, context.logic));
+  return Array.from({ length: width }, (_, i) => bitAt(vector, start + i));
 }
 
 // Bit k of the result is `offset + k` places left of the bit that the index names. With a
@@ -211,15 +252,15 @@ function readMoving(
   const range = movingRange(vector, offset, width);
   const address = indexOf(index.bits, index.signed, range.low, range.high, logic);
   if (vector.msb >= vector.lsb) {
-    const leaf = (i: number): NetId => bitAt(vector, i + offset - vector.lsb, logic);
-    return readWindow(address, width, leaf, logic);
+    const leaf = (i: number): NetId => bitAt(vector, i + offset - vector.lsb);
+    return readWindow(address, width, leaf, logic, vector.outside);
   }
-  const leaf = (i: number): NetId => bitAt(vector, vector.lsb - i + offset + width - 1, logic);
-  return [...readWindow(address, width, leaf, logic)].reverse();
+  const leaf = (i: number): NetId => bitAt(vector, vector.lsb - i + offset + width - 1);
+  return [...readWindow(address, width, leaf, logic, vector.outside)].reverse();
 }
 
-function bitAt(vector: Vector, position: number, logic: Logic): NetId {
-  return position >= 0 && position < vector.width ? vector.at(position) : logic.unknown;
+function bitAt(vector: Vector, position: number): NetId {
+  return position >= 0 && position < vector.width ? vector.at(position) : vector.outside;
 }
 
 /** The values of a moving part's index for which any bit of it is within the vector. */

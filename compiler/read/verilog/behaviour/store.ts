@@ -205,7 +205,8 @@ export class Store {
     this.#spread(key);
     if (key >= 0) this.#note(key, write);
     const kind = write.blocking ? 'now' : 'later';
-    const entry = this.#entry(value, driven);
+    const made = this.#entry(value, driven);
+    const entry = write.isCopy ? { ...made, isCopy: write.isCopy } : made;
     const isSure = when === this.logic.one;
     const result = isSure ? entry : this.#choose(key, when, entry, this.#find(key, kind));
     this.#top[kind].set(key, result);
@@ -390,4 +391,6 @@ export interface WriteMode {
   readonly blocking: boolean;
   readonly place: Position;
   readonly isLoopIndex: boolean;
+  /** Set where nets are assigned as they are. */
+  readonly isCopy?: true | undefined;
 }

@@ -1,3 +1,5 @@
+import type { Expression } from '../syntax.js';
+
 /** A part of the syntax tree that tells its kind. */
 interface Node {
   readonly kind: unknown;
@@ -26,4 +28,10 @@ export function contains(tree: unknown, kind: string): boolean {
     return !isFound;
   });
   return isFound;
+}
+
+/** Whether an expression is a net or several, as they are. */
+export function isBare(value: Expression): boolean {
+  if (value.kind === 'concat') return value.parts.every(isBare);
+  return value.kind === 'name' || value.kind === 'select' || value.kind === 'part';
 }

@@ -1,5 +1,5 @@
 import type { NetId } from '../../../circuit/ids.js';
-import { hasUnknown, unknownBits } from './bits.js';
+import { hasUnknown } from './bits.js';
 import type { Bits, Logic } from './logic.js';
 
 /** An index that is not constant, cut to the bits that matter for `low … high`. */
@@ -50,16 +50,18 @@ export function indexIs(index: Index, i: number, logic: Logic): NetId {
  * Reads `width` neighbouring bits: result bit j is `leaf(i + j)` where i is the index's value.
  *
  * A barrel of multiplexers, for one bit a multiplexer tree. Where the index is outside of
- * `low … high` the result is x (clause 5.2.1); `leaf` gives x itself for single bits outside.
+ * `low … high` the result is `outside`, x unless given (clause 5.2.1); `leaf` gives that itself for
+ * single bits outside.
  */
 export function readWindow(
   index: Index,
   width: number,
   leaf: (i: number) => NetId,
   logic: Logic,
+  outside = logic.unknown,
 ): Bits {
   const { bits, signed, beyond } = index;
-  if (hasUnknown([...bits, beyond], logic)) return unknownBits(width, logic);
+  if (hasUnknown([...bits, beyond], logic)) return new Array<NetId>(width).fill(outside);
   // Before bit b is decided, the lower bits can still move the window by less than 2^(b+1).
   const lowest = signed && bits.length > 0 ? -(2 ** (bits.length - 1)) : 0;
   const span = width + 2 ** bits.length - 1;
@@ -73,5 +75,5 @@ export function readWindow(
       logic.mux(select, values[k]!, values[k + weight]!),
     );
   }
-  return values.map((net) => logic.mux(beyond, net, logic.unknown));
+  return values.map((net) => logic.mux(beyond, net, outside));
 }

@@ -3,6 +3,7 @@ import { GateKind } from '../../../circuit/gates.js';
 import { NO_NET } from '../../../circuit/ids.js';
 import {
   evaluateConstant,
+  isBare,
   lowerAlways,
   lowerExpression,
   lowerIfFloating,
@@ -75,12 +76,6 @@ function lowerAssign(
     if (isCopy) body.copies.push(builder.driverCount);
     builder.drive(net, GateKind.Buf, [values[bit]!]);
   }
-}
-
-/** Whether an expression is a net or several, as they are. */
-function isBare(value: Expression): boolean {
-  if (value.kind === 'concat') return value.parts.every(isBare);
-  return value.kind === 'name' || value.kind === 'select' || value.kind === 'part';
 }
 
 /** `reg q = 1;` is short for an `initial` assignment (clause 6.2.1). */

@@ -92,6 +92,9 @@ export class ModuleBody implements OuterHost {
   /** Variables that a process drives in part, once for each process. */
   readonly floatingVariables: NetId[] = [];
 
+  /** Variables that a process copies from a net. */
+  readonly copiedVariables: NetId[] = [];
+
   /** Inputs of instances that nothing is connected to. */
   readonly openInputs: OpenInput[] = [];
   /** Places an instance before its turn, for a name that leads into it. */
@@ -153,6 +156,12 @@ export class ModuleBody implements OuterHost {
   readData(path: string, from: Position): Source | undefined {
     const { source } = this.sources.span(from);
     return this.design.readInclude?.(path, source);
+  }
+
+  noteCopy(variable: NetId, net: NetId): void {
+    if (!this.builder.isDeclared(net)) return;
+    this.copies.push(this.builder.driverCount);
+    this.copiedVariables.push(variable);
   }
 
   driveFloating(net: NetId, bit: FloatingBit): void {

@@ -29,10 +29,13 @@ export function checkConflicts(body: ModuleBody, usage: Usage, classes: NetClass
 }
 
 /** Variables that several processes drive, or a process and something else; z or not is no matter. */
-function severalDriven({ builder, floatingVariables }: ModuleBody, usage: Usage): Set<number> {
+function severalDriven(body: ModuleBody, usage: Usage): Set<number> {
+  const { builder, floatingVariables, copiedVariables } = body;
   const driven = new Set<number>();
   const several = new Set<number>();
-  for (const variable of floatingVariables) {
+  // A copy of a net that is never z has stayed a gate.
+  const copied = copiedVariables.filter((net) => usage.drivers[builder.find(net)] === 0);
+  for (const variable of [...floatingVariables, ...copied]) {
     const net = builder.find(variable);
     if (driven.has(net) || usage.drivers[net]! > 0) several.add(net);
     driven.add(net);

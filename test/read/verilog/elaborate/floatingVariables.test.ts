@@ -33,8 +33,44 @@ describe('z assigned by procedures', () => {
       'a function of a function',
       "function z(input c, v); z = c ? v : 1'bz; endfunction function w(input c, v); w = z(c, v); endfunction always @* q = w(e, d);",
     ],
+    ['a bit', "reg [1:0] t; always @* begin t = {e ? d : 1'bz, 1'b0}; q = t[1]; end"],
+    ['a bit from the left', "reg [0:1] t; always @* begin t = {2{e ? d : 1'bz}}; q = t[d]; end"],
+    ['a part', "reg [2:0] t; always @* begin t = {1'b1, e ? d : 1'bz, 1'b0}; q = t[2:1]; end"],
+    ['a moving part', "reg [2:0] t; always @* begin t = {3{e ? d : 1'bz}}; q = t[e +: 2]; end"],
+    ['a word', "reg t [0:1]; always @* begin t[0] = e ? d : 1'bz; t[1] = d; q = t[~e & e]; end"],
+    [
+      'the argument of a function',
+      "function z(input v); z = v; endfunction always @* q = z(e ? d : 1'bz);",
+    ],
+    [
+      'a variable as an argument',
+      "reg t; function [1:0] z(input [1:0] v); z = v[1:0]; endfunction always @* begin t = e ? d : 1'bz; q = z(t); end",
+    ],
+    [
+      'an argument of a task',
+      "task z(input v, inout o); o = e ? v : o; endtask always @* begin q = 1'bz; z(d, q); end",
+    ],
   ])('by %s drives under the condition', (_, text) => {
     expect(column(`reg q; ${text} assign y = q;`)).toBe('1101');
+  });
+
+  it.each([
+    ['a net', 'always @* q = n[0];'],
+    ['a net through a variable', 'reg t; always @(n) begin t = n; q = t; end'],
+    [
+      'bits in a loop',
+      'integer i; reg [1:0] t; always @* for (i = 0; i < 2; i = i + 1) t[i] = n[1 - i]; assign q = t[0];',
+    ],
+  ])('is handed on by a process that copies %s', (_, text) => {
+    const kind = text.includes('assign q') ? 'wire' : 'reg';
+    const bus = "wire [1:0] n = e ? {2{d}} : 2'bz;";
+    expect(column(`${bus} ${kind} q; ${text} assign y = q;`)).toBe('1101');
+  });
+
+  it('is no copy where an operator or a condition stands between', () => {
+    const bus = "wire n = e ? d : 1'bz;";
+    expect(column(`${bus} reg q; always @* q = n & 1'b1; assign y = q;`)).toBe('xx01');
+    expect(column(`${bus} reg q; always @* if (d) q = n; else q = 0; assign y = q;`)).toBe('0x01');
   });
 
   it('comes out of a function in a continuous assignment, and of a port', () => {
@@ -46,6 +82,14 @@ describe('z assigned by procedures', () => {
     );
     expect(signalValue(circuit, 'y', { e: 0, d: 0 })).toBe(1);
     expect(signalValue(circuit, 'y', { e: 1, d: 0 })).toBe(0);
+  });
+
+  it('is x in a bit of it that is not there', () => {
+    expect(
+      column(
+        "reg [1:0] t; reg q; always @* begin t = {2{e ? d : 1'bz}}; q = t[{1'b1, d}]; end assign y = q;",
+      ),
+    ).toBe('xxxx');
   });
 
   it('reads as x where it is an operand', () => {
@@ -74,6 +118,9 @@ describe('z assigned by procedures', () => {
     const both =
       "module t (input e, d, output reg q);\nalways @* q = e ? d : 1'bz;\nalways @* q = e ? 1'bz : d;\nendmodule";
     expect(reading(both).problems).toEqual(['net-multiply-driven q@3']);
+    const copied =
+      "module t (input e, d, output reg q); wire n = e ? d : 1'bz;\nalways @* q = n;\nalways @(n) q = n;\nendmodule";
+    expect(reading(copied).problems).toEqual(['net-multiply-driven q@2']);
   });
 
   it('makes two registers of one, for the value and for whether it is driven', () => {
