@@ -7,7 +7,7 @@ import { StateTableBuild } from './buildStateTable.js';
 import type { LibertyCell, LibertyPin } from './cell.js';
 import { CellBuild, type CellReport } from './cellBuild.js';
 import { contextOf } from './cellNets.js';
-import { drivePin, driveUnknown } from './drivePin.js';
+import { drivePin, driveUnknown, holdPin } from './drivePin.js';
 
 /** The nets of a cell whose logic has been built. */
 export interface BuiltCell {
@@ -30,8 +30,9 @@ export function buildCell(cell: LibertyCell, recording: Recording, report: CellR
     if (pin.direction === 'input' || pin.direction === 'supply') continue;
     const net = build.nets.pins[index]!;
     const value = shownBy(build, table, pin);
-    if (value === SILENT) silent.push(pin);
-    else if (value === undefined) driveUnknown(build, pin, net);
+    if (value === SILENT) {
+      if (!holdPin(build, pin, net)) silent.push(pin);
+    } else if (value === undefined) driveUnknown(build, pin, net);
     else drivePin(build, pin, net, value);
   }
   const { isRead } = usageOf(recording, new Children(), []);

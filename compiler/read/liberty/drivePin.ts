@@ -7,15 +7,17 @@ import type { CellBuild } from './cellBuild.js';
 import { contextOf } from './cellNets.js';
 import { wordsOf } from './words.js';
 
-/** How a pin drives its two values, and to which it is pulled. */
+/** How a pin drives its two values, to which it is pulled, and whether it keeps the last one. */
 interface DriverType {
   readonly zero?: Strength;
   readonly one?: Strength;
   readonly pull?: GateKind;
+  readonly keeps?: true;
 }
 
 /** The words of `driver_type` (what they mean is from memory). */
 const driverTypes: Readonly<Record<string, DriverType>> = {
+  bus_hold: { keeps: true },
   open_drain: { one: Strength.HighZ },
   open_source: { zero: Strength.HighZ },
   pull_down: { pull: GateKind.Zero },
@@ -38,16 +40,30 @@ export function drivePin(build: CellBuild, pin: LibertyPin, net: NetId, value: N
     return;
   }
   const { recording } = build;
-  const { zero = Strength.Strong, one = Strength.Strong, pull } = type;
+  const { zero = Strength.Strong, one = Strength.Strong } = type;
   if (disabled === undefined && zero === Strength.Strong && one === Strength.Strong) {
     recording.drive(net, GateKind.Buf, [value]);
     return;
   }
   const control = disabled === undefined ? NO_NET : build.gate(GateKind.Not, disabled);
   recording.busPart(net, value, control, { kind: PartKind.Driver, zero, one });
-  if (pull === undefined) return;
-  const strengths = { zero: Strength.Pull, one: Strength.Pull };
-  recording.busPart(net, recording.constant(pull), NO_NET, { kind: PartKind.Driver, ...strengths });
+  holdNet(build, net, type);
+}
+
+/** Lets a pin without function pull or keep its net, if its `driver_type` says so. */
+export function holdPin(build: CellBuild, pin: LibertyPin, net: NetId): boolean {
+  const type = pin.driverType && driverTypeOf(build, pin);
+  return type !== undefined && holdNet(build, net, type);
+}
+
+function holdNet(build: CellBuild, net: NetId, { pull, keeps }: DriverType): boolean {
+  const hold = (value: NetId, strength: Strength): void => {
+    const traits = { kind: PartKind.Driver, zero: strength, one: strength };
+    build.recording.busPart(net, value, NO_NET, traits);
+  };
+  if (pull !== undefined) hold(build.recording.constant(pull), Strength.Pull);
+  if (keeps) hold(build.gate(GateKind.Buf, net), Strength.Weak);
+  return pull !== undefined || keeps === true;
 }
 
 /** After a report: nothing more shall be said of nets without driver. */

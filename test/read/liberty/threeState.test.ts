@@ -13,6 +13,10 @@ const cells = `library (t) {
     pin (Y) { direction : output; function : "A"; three_state : "!E"; driver_type : "pull_up"; } }
   cell (SOFT) { pin (A) { direction : input; }
     pin (Y) { direction : output; function : "A"; driver_type : "resistive"; } }
+  cell (KEEP) { pin (Y) { direction : inout; driver_type : "bus_hold"; } }
+  cell (HIGH) { pin (Y) { direction : output; driver_type : pull_up; } }
+  cell (HELD) { pin (A, E) { direction : input; }
+    pin (Y) { direction : output; function : "A"; three_state : "!E"; driver_type : bus_hold; } }
   cell (PAD) { pin (I, OE) { direction : input; }
     pin (P) { direction : inout; function : "I"; three_state : "!OE"; }
     pin (C) { direction : output; function : "P"; } }
@@ -76,10 +80,20 @@ describe('a pin with a driver_type', () => {
     expect(bus('input a, c, e', both, rows)).toEqual(['0', '1', '1', '0']);
   });
 
+  it('may do no more than to keep or to pull its bus', () => {
+    const rows = ['0 1', '0 0', '1 0', '1 1', '0 0'];
+    const keep = 'TBUF s(.A(a), .E(d), .Y(b)); KEEP k(.Y(b));';
+    expect(bus('input a, d', keep, rows)).toEqual(['0', '0', '0', '1', '1']);
+    const held = 'HELD s(.A(a), .E(d), .Y(b));';
+    expect(bus('input a, d', held, rows)).toEqual(['0', '0', '0', '1', '1']);
+    const high = 'TBUF s(.A(a), .E(d), .Y(b)); HIGH k(.Y(b));';
+    expect(bus('input a, d', high, rows)).toEqual(['0', '1', '1', '1', '1']);
+  });
+
   it('of another kind is refused', () => {
-    const pin = 'pin (Y) { direction : output; function : "A"; driver_type : "bus_hold"; }';
+    const pin = 'pin (Y) { direction : output; function : "A"; driver_type : "schmitt"; }';
     expect(cellDesign(`pin (A) { direction : input; }\n${pin}`).problems).toEqual([
-      "not-supported 4 'bus_hold' pin Y of cell C has the driver_type bus_hold, which is not " +
+      "not-supported 4 'schmitt' pin Y of cell C has the driver_type schmitt, which is not " +
         'supported; give the cell a Verilog model in a file that is named before the library',
     ]);
   });
