@@ -21,6 +21,8 @@ interface ModelExports {
   readonly current: WebAssembly.Global<'i32'>;
   readonly position: WebAssembly.Global<'i32'>;
   readonly fault: WebAssembly.Global<'i32'>;
+  /** Of a module that passes over cycles in which nothing changes, how many it has passed over. */
+  readonly quiet?: WebAssembly.Global<'i32'>;
   run(cycles: number, stimulus: number, step: number, response: number, stride: number): number;
 }
 
@@ -140,6 +142,11 @@ export class WasmEngine implements MarkingEngine {
    */
   get runsByTable(): boolean {
     return this.#table?.isInUse ?? false;
+  }
+
+  /** How many cycles were passed over, since nothing changed in them, of the last 2^32. */
+  get quietCycles(): number {
+    return (this.#exports.quiet?.value ?? 0) >>> 0;
   }
 
   get canMark(): boolean {

@@ -21,7 +21,8 @@ export interface WasmModel extends StateMap {
    * Exports `memory`, the mutable globals `current` (address of the area that holds the state) and
    * `position` (place of the next cycle in the pattern of the clocks), and `run(cycles, stimulus, stimulusStride, response, responseStride)`, which returns the
    * number of cycles done: fewer than asked for if one has no result, whose fault number is then
-   * in the global `fault`.
+   * in the global `fault`. A module that passes over cycles in which nothing changes counts them in
+   * the global `quiet`.
    */
   readonly bytes: Uint8Array<ArrayBuffer>;
   readonly layout: ModelLayout;

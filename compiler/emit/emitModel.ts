@@ -13,6 +13,7 @@ import { type AreaLayout, FIRST_AREA, layArea } from './areaLayout.js';
 import { BlockEmitter, type Emission, type Pointers } from './blockEmitter.js';
 import { compareState } from './compareState.js';
 import { LEAVE, STRETCH } from './fence.js';
+import { addQuietLoop, canBeQuiet, stateMask, WROTE } from './guards/quietLoop.js';
 import { emitWrites } from './memory/writeCode.js';
 import { packedCycle } from './packedCycle.js';
 import {
@@ -49,10 +50,11 @@ export interface EmitOptions {
 /** Emits programs as a WebAssembly module; `wasm` is the loaded Binaryen library. */
 export function emitModel(
   wasm: typeof binaryen,
-  { programs, pattern, memories: shapes, derived }: CyclePrograms,
+  cyclePrograms: CyclePrograms,
   layout: ModelLayout,
   { comparesState = false, passes = {} }: EmitOptions = {},
 ): WasmModel {
+  const { programs, pattern, memories: shapes, derived } = cyclePrograms;
   const module = new wasm.Module();
   try {
     module.setFeatures(wasm.Features.SIMD128 | wasm.Features.MutableGlobals);
@@ -60,18 +62,28 @@ export function emitModel(
     const size = Math.max(...layouts.map((area) => area.size));
     const areas = [FIRST_AREA, FIRST_AREA + size] as const;
     const patternAt = FIRST_AREA + 2 * size;
-    const contents = patternAt + Math.ceil(pattern.length / 64) * 64;
+    // A loop that looks for a state counts the cycles.
+    const isGuarded = passes.guards !== false && !comparesState && canBeQuiet(cyclePrograms);
+    const mask = isGuarded ? stateMask(programs[0]!) : new Uint8Array();
+    const maskAt = patternAt + Math.ceil(pattern.length / 64) * 64;
+    const contents = maskAt + Math.ceil(mask.length / 64) * 64;
     const memories = layMemories(shapes, layout.threeValued, contents);
     const buffers = Math.ceil(memories.end / 64) * 64;
     const segments = [
       { at: patternAt, data: pattern },
+      ...(mask.length > 0 ? [{ at: maskAt, data: mask }] : []),
       ...segmentsOf(memoryImage(memories)).map(({ at, data }) => ({ at: contents + at, data })),
     ].map(({ at, data }, i) => ({ name: `data${i}`, offset: module.i32.const(at), data }));
     const pages = Math.ceil(buffers / 65536);
     module.setMemory(pages, 65536, 'memory', segments, false, false, '0');
     addGlobals(module, wasm.i32, areas[0]);
+    const writes = isGuarded && programs[0]!.writes.length > 0;
+    if (writes) module.addGlobal(WROTE, wasm.i32, true, module.i32.const(0));
     const cycles = programs.map((program, index) =>
-      cycleCode(wasm, module, program, { area: layouts[index]!, memories, index, passes }),
+      cycleCode(wasm, module, program, {
+        ...{ area: layouts[index]!, memories, index, passes },
+        ...(writes && { wrote: WROTE }),
+      }),
     );
     const parameters = wasm.createType(new Array(RunLocal.Current).fill(wasm.i32));
     const localCount = Math.max(...cycles.map((cycle) => cycle.localCount));
@@ -83,16 +95,19 @@ export function emitModel(
           compareState(wasm, module, programs[0]!.stateCount, leave).afterCycle,
       }),
     };
+    const name = isGuarded ? 'cycles' : 'run';
     module.addFunction(
-      'run',
+      name,
       parameters,
       wasm.i32,
       locals,
       runLoop(module, wasm.i32, place, cycles),
     );
-    module.addFunctionExport('run', 'run');
-    const mayHaveTable = passes.tables !== false;
-    if (mayHaveTable && canHaveTable({ programs, pattern, memories: shapes }, layout))
+    if (isGuarded) {
+      const { stateCount } = programs[0]!;
+      addQuietLoop(wasm, module, name, { areas, maskAt, stateCount, writes, layout });
+    } else module.addFunctionExport(name, name);
+    if (passes.tables !== false && canHaveTable(cyclePrograms, layout))
       addTableLoop(wasm, module, layout);
     return {
       bytes: Uint8Array.from(module.emitBinary()),
@@ -124,6 +139,8 @@ interface CyclePlaces {
   readonly memories: MemoryPlaces;
   readonly index: number;
   readonly passes: PassSwitches;
+  /** Global that each write to a memory sets to 1. */
+  readonly wrote?: string;
 }
 
 // The code of one cycle, with its outputs packed into the response row.
@@ -137,12 +154,12 @@ function cycleCode(
     program.vectors === undefined
       ? plainCode(wasm, module, program, places)
       : packedCode(wasm, module, program, places);
-  const { area, memories, index } = places;
+  const { area, memories, index, wrote } = places;
   const pointers = () =>
     [RunLocal.Current, RunLocal.Next, RunLocal.Row].map((local) =>
       module.local.get(local, wasm.i32),
     );
-  const writes = emitWrites(wasm, module, `cycle${index}`, area.staging, memories, pointers);
+  const writes = emitWrites(wasm, module, `cycle${index}`, area.staging, memories, pointers, wrote);
   return { ...code, statements: [...code.statements, ...writes] };
 }
 

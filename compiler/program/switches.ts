@@ -28,6 +28,8 @@ export interface PassSwitches {
   readonly fences?: boolean;
   /** Outputs that are neighbouring registers are not stored again. */
   readonly aliasOutputs?: boolean;
+  /** Cycles in which nothing changes are passed over. */
+  readonly guards?: boolean;
   /** Small machines run by a table of the cycles that have come before. */
   readonly tables?: boolean;
   /** Most operations of a generated function; 1,200 unless given. */
@@ -47,5 +49,6 @@ export const passNames = [
   'orderSinks',
   'fences',
   'aliasOutputs',
+  'guards',
   'tables',
 ] as const satisfies readonly (keyof PassSwitches)[];

@@ -23,7 +23,7 @@ describe('emitModel', () => {
     expect(WebAssembly.validate(model.bytes)).toBe(true);
     const module = await WebAssembly.compile(model.bytes);
     const names = WebAssembly.Module.exports(module).map(({ name }) => name);
-    expect(names.sort()).toEqual(['current', 'fault', 'memory', 'position', 'run']);
+    expect(names.sort()).toEqual(['current', 'fault', 'memory', 'position', 'quiet', 'run']);
     expect(WebAssembly.Module.imports(module)).toEqual([]);
     expect(programs.programs[0]!.blockStart.length).toBeGreaterThan(4);
   });

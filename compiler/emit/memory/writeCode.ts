@@ -27,7 +27,7 @@ const LOCAL_COUNT = 10;
 /**
  * Adds functions that carry out the staged writes in order; returns calls of them, which must stand
  * behind all else of the cycle. `pointers` gives the addresses of the area before the cycle, of the
- * one after it, and of the stimulus row.
+ * one after it, and of the stimulus row. `wrote` names a global that each write sets to 1.
  */
 export function emitWrites(
   wasm: typeof binaryen,
@@ -36,12 +36,13 @@ export function emitWrites(
   { writes }: Staging,
   places: MemoryPlaces,
   pointers: () => readonly Code[],
+  wrote?: string,
 ): Code[] {
   const calls: Code[] = [];
   const locals = new Array<binaryen.Type>(LOCAL_COUNT - PARAMETER_COUNT).fill(wasm.i32);
   const parameters = wasm.createType(new Array(PARAMETER_COUNT).fill(wasm.i32));
   for (let from = 0; from < writes.length; from += WRITES_IN_FUNCTION) {
-    const emitter = new WriteEmitter(wasm, module, places);
+    const emitter = new WriteEmitter(wasm, module, places, wrote);
     const some = writes.slice(from, from + WRITES_IN_FUNCTION);
     const name = `${cycle}_writes${from}`;
     module.addFunction(name, parameters, wasm.none, locals, module.block(null, emitter.all(some)));
@@ -54,9 +55,16 @@ class WriteEmitter {
   readonly #module: binaryen.Module;
   readonly #type: binaryen.Type;
   readonly #places: MemoryPlaces;
+  readonly #wrote: string | undefined;
   #labels = 0;
 
-  constructor(wasm: typeof binaryen, module: binaryen.Module, places: MemoryPlaces) {
+  constructor(
+    wasm: typeof binaryen,
+    module: binaryen.Module,
+    places: MemoryPlaces,
+    wrote: string | undefined,
+  ) {
+    this.#wrote = wrote;
     this.#module = module;
     this.#type = wasm.i32;
     this.#places = places;
@@ -70,6 +78,9 @@ class WriteEmitter {
       let to = from + 1;
       while (to < writes.length && writes[to]!.enable === enable) to++;
       const bodies = writes.slice(from, to).flatMap((write) => this.#write(write));
+      if (this.#wrote !== undefined) {
+        bodies.push(this.#module.global.set(this.#wrote, this.#module.i32.const(1)));
+      }
       const body = this.#module.block(null, bodies);
       statements.push(this.#isOne(enable, body));
       from = to;
