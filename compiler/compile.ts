@@ -25,6 +25,7 @@ import { startBits } from './passes/mergeRegisters/startBits.js';
 import { orderNodes } from './passes/orderNodes.js';
 import { orderSinks } from './passes/orderSinks.js';
 import { type PackedLogic, packWords } from './passes/packWords/packWords.js';
+import { rewriteCuts } from './passes/rewriteCuts/rewriteCuts.js';
 import { sweepNodes } from './passes/sweepNodes/sweepNodes.js';
 import { transitions } from './passes/transition/transition.js';
 import type { CyclePrograms, Program } from './program/program.js';
@@ -180,7 +181,8 @@ function packedProgram(packed: PackedLogic, passes: PassSwitches): Program {
   return buildPackedProgram(packed, ordered(scalar, passes), inverted, passes.blockNodes);
 }
 
-function plainProgram(logic: Logic, passes: PassSwitches, keepsStates = false): Program {
+function plainProgram(made: Logic, passes: PassSwitches, keepsStates = false): Program {
+  const logic = passes.rewriteCuts === false ? made : rewriteCuts(made);
   const order = ordered(logic, passes);
   const inverted = polarity(logic, passes, keepsStates);
   return buildProgram(logic, order, cutBlocks(logic, order, passes.blockNodes), inverted);

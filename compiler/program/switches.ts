@@ -20,6 +20,8 @@ export interface PassSwitches {
   readonly packWords?: boolean;
   /** Where nothing is packed: registers of one enable or reset are updated sixteen at a time. */
   readonly groupRegisters?: boolean;
+  /** Where nothing is packed: parts that are computed with fewer operations are replaced. */
+  readonly rewriteCuts?: boolean;
   /** Each node is kept in the polarity that leaves few inversions. */
   readonly choosePolarity?: boolean;
   /** Cones that share logic are computed one after another. */
@@ -45,6 +47,7 @@ export const passNames = [
   'sweepNodes',
   'packWords',
   'groupRegisters',
+  'rewriteCuts',
   'choosePolarity',
   'orderSinks',
   'fences',
