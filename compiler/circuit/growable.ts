@@ -58,6 +58,11 @@ export class GrowableUint32 {
     this.#length = end;
   }
 
+  /** Forgets all but the first `length` entries. */
+  cut(length: number): void {
+    this.#length = length;
+  }
+
   /** Forgets all entries, and the room of a list that had become long. */
   clear(): void {
     if (this.#data.length > LONG) this.#data = new Uint32Array(64);

@@ -4,7 +4,7 @@ import { STANDARD } from '../../runtime/node/index.js';
 import { isBackground, openCompiler } from '../background/compileThread.js';
 import { ModelCache } from '../cache/modelCache.js';
 import { type PowerUp, powerUpModes } from '../circuit/powerUp.js';
-import { startingRegisters } from '../circuit/startingRegisters.js';
+import { openStarts } from '../circuit/startingRegisters.js';
 import type { Design } from '../compile.js';
 import { type EngineName, engineNames } from '../engines.js';
 import { CannotGoOn } from '../run/outlets/outlets.js';
@@ -246,11 +246,12 @@ function refuseSharing(options: RunOptions): void {
   }
 }
 
-function warnOfStart({ circuit }: Design): void {
-  const { withoutStart } = startingRegisters(circuit);
-  if (withoutStart === 0) return;
+function warnOfStart(design: Design): void {
+  const { length } = openStarts(design);
+  if (length === 0) return;
   process.stderr.write(
-    `warning: ${withoutStart} of ${circuit.registers.count} registers have neither an initial ` +
-      `value nor a set or reset; they start at 0. Choose with --power-up. [register-no-start]\n`,
+    `warning: ${length} of ${design.circuit.registers.count} registers have neither an initial ` +
+      'value nor a set or reset, and no held input makes them known; they start at 0. ' +
+      'Choose with --power-up. [register-no-start]\n',
   );
 }

@@ -3,7 +3,11 @@ import { engineNames } from '../../compiler/engines.js';
 import { WorkFolder } from '../support/command.js';
 import { accumulator, chain } from './netlists.js';
 
-const folder = new WorkFolder({ 'sum.v': accumulator, 'chain.bench': chain });
+const folder = new WorkFolder({
+  'sum.v': accumulator,
+  'chain.bench': chain,
+  'ring.bench': chain.replace('DFF(d)', 'DFF(n)\nn = XOR(q15, d)'),
+});
 
 interface Summary {
   readonly engine: string;
@@ -87,7 +91,7 @@ describe('power-up', () => {
 
   it('starts registers at zero, with a warning that counts them, unless told otherwise', async () => {
     expect(await starts()).toBe('0'.repeat(16));
-    const args = ['run', 'chain.bench', '--cycles', '1', '--engine', 'bytecode'];
+    const args = ['run', 'ring.bench', '--cycles', '1', '--engine', 'bytecode'];
     const { stderr } = await folder.run(...args);
     expect(stderr).toMatch(/^warning: 16 of 16 registers .*\[register-no-start\]\n$/);
     const chosen = await folder.run(...args, '--power-up', 'zero');

@@ -7,7 +7,7 @@ const chain = (length: number) =>
   inspectSmall({
     inputs: ['clk', 'd'],
     outputs: ['q'],
-    registers: { a: { clock: 'clk', data: 'd' }, q: { clock: 'clk', data: `n${length}` } },
+    registers: { a: { clock: 'clk', data: 'q' }, q: { clock: 'clk', data: `n${length}` } },
     gates: Object.fromEntries(
       Array.from({ length }, (_, i) => [`n${i + 1}`, i === 0 ? 'not a' : `not n${i}`]),
     ),
@@ -29,9 +29,9 @@ describe('the page', () => {
       'loops: 0',
       'depth: 3 levels of gates',
       'deepest: a (register) > n1 (not) > n2 (not) > n3 (not) > q (register)',
-      'fan-out: 2 clk',
+      'fan-out: 2 clk, 2 q',
     ]);
-    expect(rows).toContain('problems: 1');
+    expect(rows).toContain('problems: 2');
     expect(text).toMatch(/^ {4}warning: 2 of 2 registers .* \[register-no-start\]$/m);
   });
 

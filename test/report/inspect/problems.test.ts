@@ -216,7 +216,7 @@ describe('inspect finds', () => {
   it('registers that nothing brings to a known value', () => {
     const text = netlist(
       'input clk, r, d, output reg p, q, output reg [4:0] v',
-      'always @(posedge clk) q <= d;',
+      'always @(posedge clk) q <= q ^ d;',
       'always @(posedge clk or posedge r) if (r) p <= 0; else p <= d;',
       'always @(posedge clk) v <= {v[3:0], q};',
     );

@@ -1,18 +1,16 @@
-import { NO_NET } from '../../../circuit/ids.js';
-import { X } from '../../../circuit/values.js';
+import { openStarts } from '../../../circuit/startingRegisters.js';
 import { counted } from '../netWords.js';
 import type { ProblemContext } from './context.js';
 
 /** Registers that nothing in the netlist brings to a known value. */
-export function findUnset({ design: { circuit }, words, diagnostics }: ProblemContext): void {
-  const { output, initial, set, reset, count } = circuit.registers;
-  const unset = output.filter(
-    (_, r) => initial[r] === X && set[r] === NO_NET && reset[r] === NO_NET,
-  );
+export function findUnset({ design, words, diagnostics }: ProblemContext): void {
+  const { output, count } = design.circuit.registers;
+  const unset = openStarts(design).map((r) => output[r]!);
   if (unset.length === 0) return;
   const message =
     `${unset.length.toLocaleString('en-US')} of ${counted(count, 'register')} ` +
-    `${unset.length === 1 ? 'has' : 'have'} neither an initial value nor a set or reset: ` +
+    `${unset.length === 1 ? 'has' : 'have'} neither an initial value nor a set or reset, ` +
+    `and no held input makes ${unset.length === 1 ? 'it' : 'them'} known: ` +
     words.list(unset);
   diagnostics.add('register-no-start', message, words.span(unset[0]!));
 }
