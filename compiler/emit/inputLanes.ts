@@ -1,39 +1,29 @@
 import type binaryen from 'binaryen';
 import { LANES } from './lanes.js';
 
-/**
- * Spreads bits of the stimulus row over the lanes of a vector: bit `bits[i]` to bit 0 of lane i,
- * -1 where it does not matter.
- *
- * The bytes that hold the bits are brought to their lanes first. Where all stand at the same place
- * of their bytes, one shift is enough; else each lane is masked and compared. May read up to fifteen
- * bytes behind the row.
- */
-export function emitInputLanes(
-  module: binaryen.Module,
-  bits: readonly number[],
-  row: () => binaryen.ExpressionRef,
+/** Bit `places[i]` of byte i in bit 0 of lane i; -1 where it does not matter. */
+export function pickBits(
+  { v128, i8x16, i16x8, i32 }: binaryen.Module,
+  bytes: binaryen.ExpressionRef,
+  places: readonly number[],
 ): binaryen.ExpressionRef {
-  const { v128, i8x16, i16x8, i32 } = module;
-  const bytes = emitBytes(module, bits, row);
-  const places = new Set(bits.filter((bit) => bit >= 0).map((bit) => bit % 8));
-  if (places.size === 1) {
-    const [place] = places as unknown as [number];
-    // Bits that come from the neighbouring byte are none of those that count.
-    return place === 0 ? bytes : i16x8.shr_u(bytes, i32.const(place));
-  }
-  const mask = () => v128.const(bits.map((bit) => (bit < 0 ? 1 : 1 << (bit % 8))));
+  const [place, another] = new Set(places.filter((each) => each >= 0));
+  // One shift is enough then: bits that come from the neighbouring byte are none of those that count.
+  if (another === undefined) return i16x8.shr_u(bytes, i32.const(place!));
+  const mask = () => v128.const(places.map((each) => (each < 0 ? 1 : 1 << each)));
   return i8x16.eq(v128.and(bytes, mask()), mask());
 }
 
-// The bytes of the row that hold the bits, each in its lane.
-function emitBytes(
+/**
+ * Bytes of the stimulus row: byte `wanted[i]` in lane i, -1 where it does not matter. May read up to
+ * fifteen bytes behind the row.
+ */
+export function rowBytes(
   module: binaryen.Module,
-  bits: readonly number[],
+  wanted: readonly number[],
   row: () => binaryen.ExpressionRef,
 ): binaryen.ExpressionRef {
   const { v128, i8x16 } = module;
-  const wanted = bits.map((bit) => (bit < 0 ? -1 : bit >>> 3));
   const window = (byte: number): binaryen.ExpressionRef => v128.load(byte, 1, row(), '0');
   const taken = new Array<boolean>(LANES).fill(false);
   let joined: binaryen.ExpressionRef | undefined;
@@ -52,6 +42,6 @@ function emitBytes(
       ? window(start)
       : i8x16.shuffle(joined ?? window(start), window(start), lanes);
   }
-  if (joined === undefined) throw new Error('a vector without input bits');
+  if (joined === undefined) throw new Error('a vector without bytes of the row');
   return joined;
 }

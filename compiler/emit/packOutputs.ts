@@ -22,7 +22,13 @@ export interface OutputGroup {
 export function outputGroups(program: Program, aliases = true): OutputGroup[] {
   const groups: OutputGroup[] = [];
   const { outputs } = program;
-  const byVector = new Set(program.vectors?.outputs.map(({ to }) => to));
+  const { outputs: halves = [], rows = [] } = program.vectors ?? {};
+  const byVector = new Set([
+    ...halves.map(({ to }) => to),
+    ...rows.flatMap(({ to, words }) =>
+      words.flatMap((word) => [8 * to + 32 * word, 8 * to + 32 * word + GROUP]),
+    ),
+  ]);
   const states = firstState(program);
   for (let first = 0; first < outputs.length; first += GROUP) {
     if (byVector.has(first)) continue;

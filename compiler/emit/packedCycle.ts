@@ -62,7 +62,7 @@ class PackedCycle {
   }
 
   #addPart(part: VectorPart, isLast: boolean): void {
-    const { states, outputs } = this.#emission.program.vectors!;
+    const { states, outputs, rows } = this.#emission.program.vectors!;
     const { i32, v128 } = this.#wasm;
     const types = { i32, v128 };
     const emitter = new VectorEmitter(
@@ -72,7 +72,7 @@ class PackedCycle {
       this.#homes,
       PARAMETER_COUNT,
     );
-    emitter.emit(part, isLast ? { states, outputs } : { states: [], outputs: [] });
+    emitter.emit(part, isLast ? { states, outputs, rows } : { states: [], outputs: [], rows: [] });
     this.#add(`vectors${part.start}`, emitter.statements, 0, emitter.localCount);
   }
 

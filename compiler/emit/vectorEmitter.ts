@@ -1,11 +1,20 @@
 import type binaryen from 'binaryen';
 import { firstState } from '../program/program.js';
-import { stepOperands, type VectorCode, VectorOp, type VectorSink } from '../program/vectorCode.js';
+import {
+  type RowSink,
+  stepOperands,
+  type VectorCode,
+  VectorOp,
+  type VectorSink,
+} from '../program/vectorCode.js';
 import type { Emission, Pointers } from './blockEmitter.js';
-import { emitInputLanes } from './inputLanes.js';
+import { pickBits, rowBytes } from './inputLanes.js';
 import { LANES } from './lanes.js';
 import { storeHalf } from './packOutputs.js';
 import type { StepHomes, VectorPart } from './vectorParts.js';
+
+/** Words of 32 bits in a vector. */
+const WORDS = 4;
 
 /** Nested expressions stay below this depth, since module writers recurse over them. */
 const DEPTH_LIMIT = 24;
@@ -56,10 +65,7 @@ export class VectorEmitter {
   }
 
   /** Emits the steps of a part, and the sinks if it is the last part. */
-  emit(
-    { start, end }: VectorPart,
-    sinks: { states: readonly VectorSink[]; outputs: readonly VectorSink[] },
-  ): void {
+  emit({ start, end }: VectorPart, sinks: Pick<VectorCode, 'states' | 'outputs' | 'rows'>): void {
     const { steps } = this.#code;
     const count = (step: number, reads = 1): void => {
       this.#reads.set(step, (this.#reads.get(step) ?? 0) + reads);
@@ -67,18 +73,23 @@ export class VectorEmitter {
     for (let step = start; step < end; step++) {
       const { op, a, b, c } = steps[step]!;
       for (const operand of [a, b, c].slice(0, stepOperands[op])) count(operand);
-      // A multiplexer's expression reads its 0-operand twice.
+      // A multiplexer's expression reads its 0-operand twice, a doubling what it doubles.
       if (op === VectorOp.Mux) count(b);
+      if (op === VectorOp.Stack) count(a);
     }
     const stores = new Map<number, (() => void)[]>();
-    const add = (sink: VectorSink, store: () => void): void => {
-      count(sink.step);
+    const add = (sink: { readonly step: number }, reads: number, store: () => void): void => {
+      count(sink.step, reads);
       // What stands in memory, or was made by an earlier part, can be stored at any time.
       const step = Math.max(sink.step, start);
       stores.set(step, [...(stores.get(step) ?? []), store]);
     };
-    for (const sink of sinks.states) add(sink, () => this.#storeState(sink));
-    for (const sink of sinks.outputs) add(sink, () => this.#storeOutputs(sink));
+    for (const sink of sinks.states) add(sink, 1, () => this.#storeState(sink));
+    for (const sink of sinks.outputs) add(sink, 1, () => this.#storeOutputs(sink));
+    for (const sink of sinks.rows) {
+      const isWhole = sink.words.length === WORDS;
+      add(sink, isWhole ? 1 : sink.words.length, () => this.#storeRow(sink, isWhole));
+    }
     for (let step = start; step < end; step++) {
       this.#emitStep(step);
       for (const store of stores.get(step) ?? []) store();
@@ -130,11 +141,12 @@ export class VectorEmitter {
     const { v128, i8x16 } = module;
     const { op, a, b, c, lanes } = this.#code.steps[step]!;
     if (op === VectorOp.Splat) return { code: this.#splat(a), depth: 2 };
-    if (op === VectorOp.Inputs) {
+    if (op === VectorOp.RowBytes) {
       const row = () => this.#at(this.#pointers.row);
-      return { code: emitInputLanes(module, lanes, row), depth: 6 };
+      return { code: rowBytes(module, lanes, row), depth: 6 };
     }
     if (op === VectorOp.Mux) return this.#mux(a, b, c);
+    if (op === VectorOp.Stack) return this.#stack(a, b);
     const left = this.#value(a);
     if (op === VectorOp.Invert) {
       const mask = constant(
@@ -142,6 +154,9 @@ export class VectorEmitter {
         lanes.map((lane) => (lane === 1 ? 0xff : 0)),
       );
       return { code: v128.xor(left.code, mask), depth: left.depth + 1 };
+    }
+    if (op === VectorOp.Pick) {
+      return { code: pickBits(module, left.code, lanes), depth: left.depth + 2 };
     }
     if (op === VectorOp.Shuffle && a === b) {
       const held = this.#again(left, a);
@@ -184,6 +199,16 @@ export class VectorEmitter {
     return { code, depth: Math.max(first.depth, other.depth, by.depth) + 3 };
   }
 
+  #stack(higher: number, lowest: number) {
+    const { module } = this.#emission;
+    const { v128, i8x16 } = module;
+    const [once, again] = [this.#value(higher), this.#value(higher)];
+    const bits = this.#value(lowest);
+    const ones = constant(module, new Array<number>(LANES).fill(1));
+    const code = v128.or(i8x16.add(once.code, again.code), v128.and(bits.code, ones));
+    return { code, depth: Math.max(once.depth, bits.depth + 1) + 2 };
+  }
+
   #splat(value: number): binaryen.ExpressionRef {
     const { module, program, area } = this.#emission;
     const { v128, i8x16, i32 } = module;
@@ -218,6 +243,19 @@ export class VectorEmitter {
     const known = count === LANES ? bits : i32.and(bits, i32.const((1 << count) - 1));
     const row = this.#at(this.#pointers.response);
     this.statements.push(storeHalf(module, row, to, known, program.outputs.length));
+  }
+
+  #storeRow({ step, to, words }: RowSink, isWhole: boolean): void {
+    const { v128 } = this.#emission.module;
+    const row = () => this.#at(this.#pointers.response);
+    if (isWhole) {
+      this.statements.push(v128.store(to, 4, row(), this.#value(step).code, '0'));
+      return;
+    }
+    for (const word of words) {
+      const { code } = this.#value(step);
+      this.statements.push(v128.store32_lane(to + 4 * word, 4, word, row(), code, '0'));
+    }
   }
 
   #at(pointer: number): binaryen.ExpressionRef {

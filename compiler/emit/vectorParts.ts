@@ -35,7 +35,7 @@ export function stepHomes(code: VectorCode, parts: readonly VectorPart[]): StepH
     }
   }
   const start = parts.at(-1)?.start ?? 0;
-  for (const { step } of [...code.states, ...code.outputs]) home(step, start);
+  for (const { step } of [...code.states, ...code.outputs, ...code.rows]) home(step, start);
   return { slotOf, slotCount };
 }
 

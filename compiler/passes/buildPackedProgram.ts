@@ -4,7 +4,6 @@ import {
   type Gather,
   stepOperands,
   VectorOp,
-  type VectorSink,
   type VectorStage,
   type VectorStep,
 } from '../program/vectorCode.js';
@@ -41,7 +40,7 @@ export function buildPackedProgram(
     stages.push({ blockEnd: writer.blockCount, gathers, stepEnd });
   }
   const steps = orderedSteps(packed, writer, numbers);
-  const moved = (sinks: readonly VectorSink[]): VectorSink[] =>
+  const moved = <Sink extends { readonly step: number }>(sinks: readonly Sink[]): Sink[] =>
     sinks.map((sink) => ({ ...sink, step: numbers[sink.step]! }));
   return {
     ...writer.finish(packed.rowOutputs),
@@ -53,6 +52,7 @@ export function buildPackedProgram(
       slots: moved(packed.slots),
       states: moved(packed.states),
       outputs: moved(packed.outputs),
+      rows: moved(packed.rows),
     },
   };
 }

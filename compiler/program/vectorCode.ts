@@ -1,4 +1,7 @@
-/** Operations on vectors of sixteen bytes, of which bit 0 of each byte counts. */
+/**
+ * Operations on vectors of sixteen bytes, of which bit 0 of each byte counts, except where they
+ * are told to be whole.
+ */
 export const VectorOp = {
   /** Sixteen state bits from place `a` on. */
   State: 0,
@@ -6,8 +9,8 @@ export const VectorOp = {
   Slot: 1,
   /** The program's value `a` in all lanes. */
   Splat: 2,
-  /** Bits of the stimulus row, `lanes[i]` in lane i; -1 where it does not matter. */
-  Inputs: 3,
+  /** Bytes of the stimulus row, `lanes[i]` in lane i; -1 where it does not matter. */
+  RowBytes: 3,
   /** Lane `lanes[i]` of `a`, or of `b` where that is 16 or more. */
   Shuffle: 4,
   /** `a`, inverted in the lanes where `lanes[i]` is 1. */
@@ -19,10 +22,14 @@ export const VectorOp = {
   Xor: 9,
   /** `a` selects: `b` where it is 0, `c` where it is 1. */
   Mux: 10,
+  /** Bit `lanes[i]` of the whole byte i of `a`; -1 where it does not matter. */
+  Pick: 11,
+  /** Whole bytes: those of `a` one place higher, with the bits of `b` as their lowest ones. */
+  Stack: 12,
 } as const;
 
 /** How many operands are results of other steps, indexed by `VectorOp`. */
-export const stepOperands: readonly number[] = [0, 0, 0, 0, 2, 1, 2, 2, 2, 2, 3];
+export const stepOperands: readonly number[] = [0, 0, 0, 0, 2, 1, 2, 2, 2, 2, 3, 1, 2];
 
 /** One vector operation. Operands are steps, except where `VectorOp` says otherwise. */
 export interface VectorStep {
@@ -39,6 +46,15 @@ export interface VectorSink {
   readonly invert: boolean;
   /** Place of the first state bit, first bit of the response row, or number of the lane slot. */
   readonly to: number;
+}
+
+/** Whole bytes that become bytes of the response row. */
+export interface RowSink {
+  readonly step: number;
+  /** Where lane 0 goes, in bytes; a multiple of sixteen. */
+  readonly to: number;
+  /** Which of the four words of the vector are stored, each to its place in the sixteen bytes. */
+  readonly words: readonly number[];
 }
 
 /** Bits that scalar code stores for vectors to read. */
@@ -66,6 +82,8 @@ export interface VectorCode {
   readonly states: readonly VectorSink[];
   /** Sixteen bits of the response row each; `to` is a multiple of 16. */
   readonly outputs: readonly VectorSink[];
+  /** The words of the response row that are made as whole bytes. */
+  readonly rows: readonly RowSink[];
 }
 
 /** One turn of scalar code and vectors. */

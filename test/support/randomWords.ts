@@ -40,20 +40,25 @@ const recipe: fc.Arbitrary<WordRecipe> = fc.record({
 
 /**
  * Circuits of words of bits: the same operation on each bit, bits that change places, single bits
- * that govern whole words, and single bits made of words.
+ * that govern whole words, single bits made of words, and an output that has bit 0 of several words,
+ * then bit 1 of them, and so on.
  */
 export function randomWords(): fc.Arbitrary<Circuit> {
   const widths = fc.array(fc.integer({ min: 1, max: 40 }), { minLength: 1, maxLength: 3 });
-  return fc
-    .tuple(widths, fc.array(recipe, { minLength: 2, maxLength: 12 }))
-    .map(([inputs, recipes]) => {
-      const circuit = circuitOf(inputs, recipes);
-      const print = { value: () => JSON.stringify([inputs, recipes]), enumerable: false };
-      return Object.defineProperty(circuit, fc.toStringMethod, print);
-    });
+  // Words in the output across them, and bits before it; -1 without.
+  const across = fc.tuple(fc.constantFrom(-1, 8, 8, 9), fc.nat(2));
+  return fc.tuple(widths, fc.array(recipe, { minLength: 2, maxLength: 12 }), across).map((made) => {
+    const circuit = circuitOf(...made);
+    const print = { value: () => JSON.stringify(made), enumerable: false };
+    return Object.defineProperty(circuit, fc.toStringMethod, print);
+  });
 }
 
-function circuitOf(inputWidths: readonly number[], recipes: readonly WordRecipe[]): Circuit {
+function circuitOf(
+  inputWidths: readonly number[],
+  recipes: readonly WordRecipe[],
+  [wordsAcross, before]: readonly [number, number],
+): Circuit {
   const builder = new CircuitBuilder();
   const clock = builder.net();
   builder.input('clk', [clock]);
@@ -84,6 +89,15 @@ function circuitOf(inputWidths: readonly number[], recipes: readonly WordRecipe[
   }
   const last = words.at(-1)!;
   builder.output('last', last, { msb: last.length - 1, lsb: 0 });
+  if (wordsAcross > 0) {
+    const chosen = words.slice(-wordsAcross);
+    const places = Math.min(...chosen.map((word) => word.length));
+    const bits = [
+      ...last.slice(0, before),
+      ...Array.from({ length: places }, (_, i) => chosen.map((word) => word[i]!)).flat(),
+    ];
+    builder.output('across', bits, { msb: bits.length - 1, lsb: 0 });
+  }
   const signals = names.map((_, offset) => ({
     name: `n${offset}`,
     ...{ msb: 0, lsb: 0, isVector: false, offset, width: 1 },

@@ -7,11 +7,12 @@ import {
   nodeOf,
 } from '../../logic/logic.js';
 import { mapEffects } from '../../logic/sinks.js';
-import type { VectorSink } from '../../program/vectorCode.js';
+import type { RowSink, VectorSink } from '../../program/vectorCode.js';
 import { growPacks } from './growPacks.js';
 import { LANES, type Packs, type Tuple } from './packs.js';
 import { areWorthIt, prunePacks } from './prunePacks.js';
 import { readersOf } from './readers.js';
+import { stackedRows } from './stackedRows.js';
 import { breakCircles, type Stages, stagesOf } from './units.js';
 import { type PlannedGather, VectorPlan } from './vectorPlan.js';
 
@@ -33,6 +34,7 @@ export interface PackedLogic {
   readonly slots: readonly VectorSink[];
   readonly states: readonly VectorSink[];
   readonly outputs: readonly VectorSink[];
+  readonly rows: readonly RowSink[];
   /** Per node of `scalar`, the stage that computes it. */
   readonly stageOf: Uint16Array;
   readonly stageCount: number;
@@ -76,8 +78,14 @@ class Packing {
     for (const pack of this.#stages.packOrder) plan.ofPack(pack);
     const slots = this.#slots();
     const states = this.#stateSinks();
-    const outputs = this.#outputSinks();
-    const { scalar, fixedStates } = this.#scalar(states, outputs);
+    const rows = stackedRows(this.#packs, plan);
+    const shown = new Uint8Array(this.#logic.outputs.length);
+    for (const { to, words } of rows) {
+      for (const word of words) shown.fill(1, 8 * to + 32 * word, 8 * to + 32 * (word + 1));
+    }
+    const outputs = this.#outputSinks(shown);
+    for (const { to } of outputs) shown.fill(1, to, to + LANES);
+    const { scalar, fixedStates } = this.#scalar(states, shown);
     return {
       scalar,
       fixedStates,
@@ -88,6 +96,7 @@ class Packing {
       slots,
       states,
       outputs,
+      rows,
       stageOf: this.#latestStages(scalar),
       stageCount: this.#stageCount,
     };
@@ -161,10 +170,12 @@ class Packing {
     return sinks;
   }
 
-  #outputSinks(): VectorSink[] {
+  // Sixteen outputs at a time, except those that are made already.
+  #outputSinks(shown: Uint8Array): VectorSink[] {
     const { outputs } = this.#logic;
     const sinks: VectorSink[] = [];
     for (let first = 0; first < outputs.length; first += LANES) {
+      if (shown[first] === 1) continue;
       const group = outputs.slice(first, first + LANES);
       const tuple: Tuple = [...group, ...new Array<number>(LANES - group.length).fill(-1)];
       if (!this.#plan.needsVectors(tuple)) continue;
@@ -176,7 +187,7 @@ class Packing {
 
   #scalar(
     stateSinks: readonly VectorSink[],
-    outputSinks: readonly VectorSink[],
+    shown: Uint8Array,
   ): { scalar: Logic; fixedStates: Uint8Array } {
     const logic = this.#logic;
     const moved = this.#mover();
@@ -198,8 +209,6 @@ class Packing {
     }
     const byVector = new Uint8Array(this.#placement.length);
     for (const { to } of stateSinks) byVector.fill(1, to, to + LANES);
-    const shown = new Uint8Array(logic.outputs.length);
-    for (const { to } of outputSinks) shown.fill(1, to, to + LANES);
     const unused: LogicState = { role: 'unused', index: 0 };
     const gathered = this.#plan.gathers.flatMap(({ literals }) =>
       literals.map((literal) => (literal < 0 ? FALSE : moved(literal))),

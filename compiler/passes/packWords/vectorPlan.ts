@@ -63,6 +63,15 @@ export class VectorPlan {
     return this.#ofPack[number];
   }
 
+  /** Whole bytes, of which the literals of each tuple, the lowest first, are a bit. */
+  stacked(tuples: readonly Tuple[]): number {
+    const bits = tuples.map((tuple) => {
+      const { step, inverted } = this.together(tuple);
+      return inverted ? this.#step(VectorOp.Invert, step, 0, 0, EVERY_LANE) : step;
+    });
+    return bits.reduceRight((higher, bit) => this.#step(VectorOp.Stack, higher, bit));
+  }
+
   /** A new lane slot. */
   newSlot(): number {
     return this.slotCount++;
@@ -136,7 +145,11 @@ export class VectorPlan {
       const single = this.#splat(tuple);
       if (single !== undefined) return single;
     }
-    const sources = this.#sourcesOf(tuple);
+    return this.joined(this.#sourcesOf(tuple));
+  }
+
+  /** A vector with lanes of others. */
+  joined(sources: readonly Source[]): number {
     const [first, second] = sources;
     if (first === undefined) throw new Error('a tuple without lanes');
     if (second === undefined) {
@@ -216,9 +229,19 @@ export class VectorPlan {
     if (source === INPUTS) {
       const { a } = this.#packs.logic;
       const bits = literals.map((literal) => (literal < 0 ? -1 : a[nodeOf(literal)]!));
-      return this.#step(VectorOp.Inputs, 0, 0, 0, bits);
+      return this.#inputs(bits);
     }
     return this.#gathered(literals);
+  }
+
+  // Bits of one place in their bytes are read from the same bytes as those of others.
+  #inputs(bits: readonly number[]): number {
+    const bytes = bits.map((bit) => (bit < 0 ? -1 : bit >>> 3));
+    const step = this.#step(VectorOp.RowBytes, 0, 0, 0, bytes);
+    const places = bits.map((bit) => (bit < 0 ? -1 : bit & 7));
+    return places.every((place) => place <= 0)
+      ? step
+      : this.#step(VectorOp.Pick, step, 0, 0, places);
   }
 
   #gathered(literals: Literal[]): number {
@@ -247,8 +270,8 @@ export class VectorPlan {
   }
 }
 
-/** Sixteen lanes that a tuple takes from one vector: per lane the lane there, or -1. */
-interface Source {
+/** Sixteen lanes that are taken from one vector: per lane the lane there, or -1. */
+export interface Source {
   readonly step: number;
   readonly from: readonly number[];
 }
