@@ -1,4 +1,4 @@
-import { GrowableUint8, GrowableUint32 } from '../../circuit/growable.js';
+import { GrowableUint32 } from '../../circuit/growable.js';
 import type { Position } from '../../diagnostics/sourceMap.js';
 import type { NameId } from '../names.js';
 import type { Expression, RangeSyntax, Strength } from './expressionSyntax.js';
@@ -49,6 +49,13 @@ export const ConnectionKind = {
 const LARGE = 1 << 16;
 const MOST_SCALE = 64;
 
+// A connection is three numbers: the port, what it is connected to, and where. What it is connected
+// to has its kind in the upper two bits, and a `Bit` its name and index in a list of their own.
+const CONNECTION = 3;
+const Field = { Port: 0, Target: 1, Position: 2 } as const;
+const KIND = 30;
+const MOST = (1 << KIND) - 1;
+
 /** Value of `connectionPort` for a positional connection. */
 export const POSITIONAL = 0xffffffff;
 
@@ -62,7 +69,7 @@ export interface InstanceExtras {
 }
 
 /**
- * All instances of a module in columns, so that a million of them cost some tens of bytes each.
+ * All instances of a module in columns, sixteen bytes for each and twelve for each connection.
  *
  * The connections of instance i are `connectionStart(i) … connectionStart(i + 1) - 1`.
  */
@@ -70,12 +77,9 @@ export class InstanceTable {
   readonly #module = new GrowableUint32();
   readonly #name = new GrowableUint32();
   readonly #position = new GrowableUint32();
-  readonly #connections = new GrowableUint32();
-  readonly #port = new GrowableUint32();
-  readonly #kind = new GrowableUint8();
-  readonly #first = new GrowableUint32();
-  readonly #second = new GrowableUint32();
-  readonly #connectionPosition = new GrowableUint32();
+  readonly #start = new GrowableUint32();
+  readonly #connection = new GrowableUint32();
+  readonly #bits = new GrowableUint32();
   readonly #extras = new Map<number, InstanceExtras>();
   readonly expressions: Expression[] = [];
   readonly #fractionRead: () => number;
@@ -98,22 +102,26 @@ export class InstanceTable {
    */
   begin(module: number, name: NameId, position: Position, extras?: InstanceExtras): number {
     if (this.#module.length === 0) this.#fractionBefore = this.#fractionRead();
-    if (this.#kind.length >= this.#reserved) this.#reserve();
+    if (this.#connectionCount >= this.#reserved) this.#reserve();
     if (extras !== undefined) this.#extras.set(this.#module.length, extras);
     this.#module.push(module >>> 0);
     this.#name.push(name);
     this.#position.push(position);
-    this.#connections.push(this.#kind.length);
+    this.#start.push(this.#connectionCount);
     return this.#module.length - 1;
   }
 
   /** Adds a connection to the instance begun last. `port` is a NameId or `POSITIONAL`. */
   connect(port: number, kind: number, first: number, second: number, position: Position): void {
-    this.#port.push(port);
-    this.#kind.push(kind);
-    this.#first.push(first);
-    this.#second.push(second);
-    this.#connectionPosition.push(position);
+    let target = first;
+    if (kind === ConnectionKind.Bit) {
+      target = this.#bits.length;
+      this.#bits.push(first);
+      this.#bits.push(second);
+    }
+    this.#connection.push(port);
+    this.#connection.push(target | (kind << KIND));
+    this.#connection.push(position);
   }
 
   // With what has been read as a measure of what comes, a large table need not grow step by step.
@@ -121,14 +129,12 @@ export class InstanceTable {
     const read = (this.#fractionRead() - this.#fractionBefore) / (1 - this.#fractionBefore);
     const scale = Math.min(MOST_SCALE, 1.05 / Math.max(read, 0.01));
     const instances = Math.ceil(this.#module.length * scale);
-    const connections = Math.ceil(this.#kind.length * scale);
-    for (const column of [this.#module, this.#name, this.#position, this.#connections]) {
+    const connections = Math.ceil(this.#connectionCount * scale);
+    for (const column of [this.#module, this.#name, this.#position, this.#start]) {
       column.reserve(instances);
     }
-    for (const column of [this.#port, this.#first, this.#second, this.#connectionPosition]) {
-      column.reserve(connections);
-    }
-    this.#kind.reserve(connections);
+    this.#connection.reserve(CONNECTION * connections);
+    this.#bits.reserve(Math.ceil(this.#bits.length * scale));
     // Before the last of them is there, and with it the need for more.
     this.#reserved = Math.max(0.9 * connections, 2 * this.#reserved);
   }
@@ -152,28 +158,39 @@ export class InstanceTable {
   }
 
   connectionStart(instance: number): number {
-    return instance < this.count ? this.#connections.get(instance) : this.#kind.length;
+    return instance < this.count ? this.#start.get(instance) : this.#connectionCount;
   }
 
   /** NameId of the port, or `POSITIONAL`. */
   connectionPort(connection: number): number {
-    return this.#port.get(connection);
+    return this.#connection.get(connection * CONNECTION + Field.Port);
   }
 
   /** A `ConnectionKind`. */
   connectionKind(connection: number): number {
-    return this.#kind.get(connection);
+    return this.#target(connection) >>> KIND;
   }
 
   connectionFirst(connection: number): number {
-    return this.#first.get(connection);
+    const target = this.#target(connection);
+    const first = target & MOST;
+    return target >>> KIND === ConnectionKind.Bit ? this.#bits.get(first) : first;
   }
 
   connectionSecond(connection: number): number {
-    return this.#second.get(connection);
+    const target = this.#target(connection);
+    return target >>> KIND === ConnectionKind.Bit ? this.#bits.get((target & MOST) + 1) : 0;
   }
 
   connectionPosition(connection: number): Position {
-    return this.#connectionPosition.get(connection);
+    return this.#connection.get(connection * CONNECTION + Field.Position);
+  }
+
+  get #connectionCount(): number {
+    return this.#connection.length / CONNECTION;
+  }
+
+  #target(connection: number): number {
+    return this.#connection.get(connection * CONNECTION + Field.Target);
   }
 }

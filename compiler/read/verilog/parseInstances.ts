@@ -1,5 +1,6 @@
 import type { Position } from '../../diagnostics/sourceMap.js';
 import type { NameId } from '../names.js';
+import { readCommonConnections } from './commonConnections.js';
 import { ConnectionKind, type InstanceExtras, POSITIONAL } from './instances.js';
 import { FIRST_GATE } from './keywords.js';
 import { isStrength, parseParameterValues, parseStrengthFrom, skipDelay } from './parseDelays.js';
@@ -144,14 +145,19 @@ function parseConnections(p: Parser): void {
     return;
   }
   for (;;) {
-    if (tokens.kind === Dot) parseNamedConnection(p);
-    else if (tokens.kind === Comma || tokens.kind === RightParen) {
-      p.instances.connect(POSITIONAL, ConnectionKind.Empty, 0, 0, tokens.start);
-    } else parseConnection(p, POSITIONAL);
+    if (!readCommonConnections(p)) parseAnyConnection(p);
     if (tokens.kind !== Comma) break;
     tokens.next();
   }
   p.expect(RightParen, "',' or ')'");
+}
+
+function parseAnyConnection(p: Parser): void {
+  const { tokens } = p;
+  if (tokens.kind === Dot) parseNamedConnection(p);
+  else if (tokens.kind === Comma || tokens.kind === RightParen) {
+    p.instances.connect(POSITIONAL, ConnectionKind.Empty, 0, 0, tokens.start);
+  } else parseConnection(p, POSITIONAL);
 }
 
 /** `.` port `(` [ expression ] `)` */

@@ -1,5 +1,5 @@
 import type { Position } from '../../diagnostics/sourceMap.js';
-import { EMPTY_HASH, hashStep, type NameTable } from '../names.js';
+import { EMPTY_HASH, hashStep, type NameId, type NameTable } from '../names.js';
 import { Char, CharClass, charClass, isNamePart, isSpace } from './characters.js';
 import { decode } from './decode.js';
 import { strayText } from './failureText.js';
@@ -12,6 +12,7 @@ import {
   endOfLine,
   endOfName,
   endOfReal,
+  endOfSpace,
   endOfStringText,
 } from './textEnds.js';
 import { Token } from './tokens.js';
@@ -28,6 +29,7 @@ const singles = singleTokens;
 const classes = charClass;
 const step = hashStep;
 const LETTER = CharClass.Letter;
+const BACKSLASH = Char.Backslash;
 
 /** Who gives the scanner its texts and hears of problems. */
 export interface ScannerClient {
@@ -95,13 +97,33 @@ export class Scanner {
     this.end = this.fixedStart < 0 ? this.base + this.at : this.fixedEnd;
   }
 
+  /**
+   * Reads the name that begins at an offset of a file, without a token of its own; `at` is then
+   * behind it, from where `goOn` reads tokens again. Returns 0 where none or a keyword is there.
+   */
+  nameAt(start: number): NameId {
+    const text = this.text;
+    const first = text[start]!;
+    if (classes[first] === LETTER) this.#identifier(start);
+    else if (first === BACKSLASH && (text[start + 1] ?? 0) > SPACE) this.#escaped(start);
+    else return 0;
+    return this.kind === IDENTIFIER ? this.value : 0;
+  }
+
+  /** Reads the next token from an offset on. */
+  goOn(offset: number): void {
+    this.at = offset;
+    this.end = this.base + offset;
+    this.next();
+  }
+
   /** Reads a name or a sign in a file, after one blank at most: nearly all tokens of a netlist. */
   #scanCommon(): boolean {
     const text = this.text;
     let at = this.at;
     if (at + 2 >= text.length || this.fixedStart >= 0) return false;
-    let first = text[at]!;
-    if (first === SPACE) first = text[++at]!;
+    if (text[at] === SPACE) at++;
+    const first = text[at]!;
     const single = singles[first]!;
     if (single !== 0) {
       // A comment or an attribute may begin here.
@@ -160,7 +182,7 @@ export class Scanner {
     return this.fixedStart < 0 ? this.base + offset : this.fixedStart;
   }
 
-  /** The position of the end, at an offset, of something in the current text. */
+  /** The position of an end at an offset. */
   endPosition(offset: number): Position {
     return this.fixedStart < 0 ? this.base + offset : this.fixedEnd;
   }
@@ -187,17 +209,9 @@ export class Scanner {
   /** Moves to the first byte that is no white space, comment or attribute; -1 at the end. */
   #skip(withAttributes = true): number {
     for (;;) {
-      const text = this.text;
-      const limit = text.length;
-      let at = this.at;
-      let c = 0;
-      while (at < limit) {
-        c = text[at]!;
-        if (charClass[c] !== CharClass.Space) break;
-        at++;
-      }
-      this.at = at;
-      if (at >= limit) {
+      this.at = endOfSpace(this.text, this.at);
+      const c = this.text[this.at];
+      if (c === undefined) {
         if (!this.#client.endOfText()) return -1;
       } else if (c === Char.Backtick) {
         this.#client.directive();
@@ -227,8 +241,7 @@ export class Scanner {
     const text = this.text;
     const start = this.at;
     if (text[start + 1] !== Char.Star || text === this.#withoutAttributeEnd) return false;
-    let at = start + 2;
-    while (isSpace(text[at])) at++;
+    const at = endOfSpace(text, start + 2);
     // `(*)` after an @ is an event list.
     if (text[at] === Char.RightParen) return false;
     const end = endOfAttribute(text, at);
@@ -237,8 +250,8 @@ export class Scanner {
       this.#problem("the attribute has no end '*)'", start, start + 2);
       return false;
     }
-    const hasUnderscore = text.subarray(start, end).includes(Char.Underscore);
-    if (hasUnderscore) this.#noteAttribute(decode(text, start, end));
+    if (text.subarray(start, end).includes(Char.Underscore))
+      this.#noteAttribute(decode(text, start, end));
     this.at = end;
     return true;
   }

@@ -7,6 +7,13 @@ export function endOfName(text: Uint8Array, from: number): number {
   return at;
 }
 
+/** The offset after the white space from an offset on. */
+export function endOfSpace(text: Uint8Array, from: number): number {
+  let at = from;
+  while (at < text.length && charClass[text[at]!] === CharClass.Space) at++;
+  return at;
+}
+
 /** The offset of the next line end, or the text's end. */
 export function endOfLine(text: Uint8Array, from: number): number {
   const end = text.indexOf(Char.LineFeed, from);
