@@ -10,9 +10,9 @@ import type { FloatingBits } from './floatingBits.js';
 import { LocalScope } from './localScope.js';
 import { declareLocals, localVariable, rangeOfType } from './locals.js';
 import type { Bits } from './logic.js';
-import { calledBinding } from './names.js';
+import { calledBinding, isSystemName } from './names.js';
 import { pathText, report } from './report.js';
-import { isSystemName, lowerSystemFunction } from './systemFunctions.js';
+import { lowerSystemFunction } from './systemFunctions.js';
 import { shapeOf } from './widths.js';
 
 /** How deep calls may nest: a recursion must end by constants alone. */

@@ -12,9 +12,8 @@ import type { CallExpression, Context } from './context.js';
 import { lower, lowerCondition } from './expressions.js';
 import { chosenBit, type FloatingBits, resizeFloating } from './floatingBits.js';
 import { resolveCalled } from './localScope.js';
-import { meaningOf } from './names.js';
+import { isSystemName, meaningOf } from './names.js';
 import { readFloating } from './selects.js';
-import { isSystemName } from './systemFunctions.js';
 import { walk } from './walk.js';
 import { shapeOf } from './widths.js';
 

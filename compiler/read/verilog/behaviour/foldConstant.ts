@@ -1,5 +1,6 @@
 import type { Expression } from '../syntax.js';
 import { signedValue } from './bits.js';
+import { constantCall } from './constantCalls.js';
 import { constantArithmetic } from './constantOperators.js';
 import type { Context } from './context.js';
 import { join, operatorRule, type Shape, shapeOf, unsizedWidth } from './widths.js';
@@ -11,7 +12,8 @@ type Unary = Extract<Expression, { kind: 'unary' }>;
 const MOST_LEVELS = 40;
 
 /**
- * The value of an expression of plain numbers, parameters and variables that were assigned a number,
+ * The value of an expression of plain numbers, parameters, functions of these and variables that were
+ * assigned a number,
  * in the width and sign of its context, as `lower` gives it in bits; undefined for any other, and
  * where an x comes in.
  *
@@ -51,6 +53,11 @@ export function foldConstant(
       const chosen = condition === 0n ? expression.whenFalse : expression.whenTrue;
       return foldConstant(chosen, context, width, signed, level + 1);
     }
+    case 'call': {
+      const value = constantCall(expression, context);
+      if (value === undefined) return undefined;
+      return resized(value, shapeOf(expression, context).width, width, signed);
+    }
     default:
       return undefined;
   }
@@ -75,7 +82,8 @@ const isFoldable = ({ kind }: Expression): boolean =>
   kind === 'name' ||
   kind === 'unary' ||
   kind === 'binary' ||
-  kind === 'conditional';
+  kind === 'conditional' ||
+  kind === 'call';
 
 function foldUnary(
   { operator, operand }: Unary,

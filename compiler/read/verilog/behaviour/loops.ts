@@ -4,6 +4,7 @@ import { Sequence } from './exits.js';
 import { lowerCondition } from './expressions.js';
 import { foldSelf } from './foldConstant.js';
 import { LoopCircle } from './loopCircle.js';
+import type { Loop } from './loopState.js';
 import { isPowerUp } from './powerUp.js';
 import { errorsMet, type Placed, report } from './report.js';
 import { countOf } from './widths.js';
@@ -24,11 +25,11 @@ export function executeFor(
   context: Context,
   assign: Assign,
 ): Exits | undefined {
-  const { initial, condition, step, body } = statement;
+  const { initial, step } = statement;
   assign(initial, context, true);
-  const circle = new LoopCircle(statement, context);
+  const circle = new LoopCircle(statement, context, initial);
   const { shared } = context.scope;
-  return unroll(condition, body, context, () => {
+  return unroll(statement, context, () => {
     circle.endTurn();
     const before = errorsMet(shared);
     assign(step, context, true);
@@ -43,7 +44,8 @@ export function executeWhile(
   statement: Extract<Statement, { kind: 'while' }>,
   context: Context,
 ): Exits | undefined {
-  return unroll(statement.condition, statement.body, context, () => {});
+  const circle = new LoopCircle(statement, context);
+  return unroll(statement, context, () => circle.startTurn());
 }
 
 /** Unrolls a `repeat` loop; its count must be constant. */
@@ -61,8 +63,7 @@ export function executeRepeat(
 }
 
 function unroll(
-  condition: Expression,
-  body: Statement,
+  { condition, body }: Pick<Loop, 'condition' | 'body'>,
   context: Context,
   step: () => void,
 ): Exits | undefined {

@@ -49,6 +49,11 @@ function resolveWith(
   return scope.resolve(elements);
 }
 
+/** Whether a path names a system task or function. */
+export function isSystemName(path: readonly NameId[], context: Context): boolean {
+  return path.length === 1 && context.scope.shared.names.text(path[0]!).startsWith('$');
+}
+
 /** What a name means that is called as a function or task; a diagnostic where it means nothing. */
 export function calledBinding(named: Named, context: Context): Binding | undefined {
   return found(resolveCalled(context.scope, named.path), named, context);

@@ -9,10 +9,9 @@ import { Sequence } from './exits.js';
 import { LocalScope } from './localScope.js';
 import { declareLocals } from './locals.js';
 import { executeFor, executeRepeat, executeWhile } from './loops.js';
-import { refuse } from './names.js';
+import { isSystemName, refuse } from './names.js';
 import { isPowerUp, leaveForLater, putOffAssign } from './powerUp.js';
 import { type Placed, pathText } from './report.js';
-import { isSystemName } from './systemFunctions.js';
 import { executeSystemTask } from './systemTasks.js';
 
 /** Executes a statement symbolically on the context's store (clause 9). */

@@ -1,4 +1,3 @@
-import type { NameId } from '../../names.js';
 import type { Expression } from '../syntax.js';
 import { bitsOf, unknownBits } from './bits.js';
 import type { CallExpression, Context } from './context.js';
@@ -7,11 +6,6 @@ import type { Bits } from './logic.js';
 import { refuse } from './names.js';
 import { report } from './report.js';
 import { constantIn } from './widths.js';
-
-/** Whether a path names a system task or function. */
-export function isSystemName(path: readonly NameId[], context: Context): boolean {
-  return path.length === 1 && context.scope.shared.names.text(path[0]!).startsWith('$');
-}
 
 /** The value of `$signed`, `$unsigned` (clause 5.5) or `$clog2` (clause 17.11.1). */
 export function lowerSystemFunction(expression: CallExpression, context: Context): Bits {

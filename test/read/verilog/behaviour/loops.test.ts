@@ -21,6 +21,55 @@ describe('a for loop', () => {
     expect(problems[0]!.message).toContain(`comes back to ${value} before`);
   });
 
+  it.each([
+    [
+      'a step that changes another variable',
+      'for (i = 0; i < 8; j = j + 1) n = n + d[0];',
+      'i < 8',
+      '`i`; its step changes `j`',
+    ],
+    [
+      'nothing that changes what ends it',
+      'i = 0; while (i < 8 && !k) begin n = n + i; j = j + 1; end',
+      'i < 8 && !k',
+      'nothing in it changes `i`, `k`;',
+    ],
+    [
+      'a body that steps in circles',
+      'for (i = 0; i < 8; j = j + 1) begin n = ~n; if (d[0]) n = 0; i = (i + 3) % 4; end',
+      'i < 8',
+      '`i` comes back to ',
+    ],
+    [
+      'two variables that go round',
+      'i = 0; j = 1; k = 0; while (i + k < 8) begin if (j == 3) i = k; else k = j; j = (j + 1) % 4; end',
+      'i + k < 8',
+      'come back to values that they had',
+    ],
+    [
+      'an end that a function of parameters gives',
+      'for (i = 0; i < log2(P); i = i + 1) n[i] = d[i];',
+      'i < log2(P)',
+      '`i` comes back to ',
+    ],
+  ])('is refused soon with %s', (_, loop, at, message) => {
+    const problems = problemsOf(`
+      parameter P = 5000; input [7:0] d; reg [7:0] n; reg [2:0] i, k; integer j;
+      function integer log2(input integer v); for (log2 = 0; v > 1; log2 = log2 + 1) v = v >> 1; endfunction
+      always @* begin n = 0; j = 0; k = 0; ${loop} end`);
+    expect(problems.map((problem) => [problem.code, problem.at])).toEqual([['loop-unbounded', at]]);
+    expect(problems[0]!.message).toContain(message);
+  });
+
+  it('may go on for long by variables of its body', () => {
+    const { diagnostics, simulate } = bench(`
+      parameter P = 1000; reg [15:0] n; reg [1:0] i; integer j;
+      function integer twice(input integer v); twice = v * 2; endfunction
+      always @* begin n = 0; j = 0; for (i = 0; j < twice(P); i = i + 1) begin n = n + 1; j = n; end end`);
+    expect(diagnostics).toEqual([]);
+    expect(simulate().number('n')).toBe(2000);
+  });
+
   it('may come back to a value of its index where something else ends it', () => {
     const loops = [
       'for (i = 0; n < 9; i = i + 1) n = n + 1;',

@@ -1,0 +1,98 @@
+import type { NameId } from '../../names.js';
+import type { Scope } from '../scope.js';
+import type { Item, RoutineItem } from '../syntax.js';
+import { knownOf } from './bits.js';
+import type { CallExpression, Context } from './context.js';
+import { resolveCalled } from './localScope.js';
+import { forEachName, isSystemName, plainMeaningOf } from './names.js';
+import { errorsMet } from './report.js';
+import { walk } from './walk.js';
+
+const known = new WeakMap<CallExpression, WeakMap<Scope, bigint | null>>();
+
+/**
+ * The value of a call of which nothing but parameters and numbers decide, in its own width; worked
+ * out once for each scope. Undefined for any other call, and where an x comes in.
+ */
+export function constantCall(call: CallExpression, context: Context): bigint | undefined {
+  const { scope, logic, services } = context;
+  const values = known.get(call) ?? new WeakMap<Scope, bigint | null>();
+  known.set(call, values);
+  let value = values.get(scope);
+  if (value === undefined) {
+    value = null;
+    const before = errorsMet(scope.shared);
+    if (hasConstantArguments(call, context) && isPure(call, context)) {
+      const bits = services.call(call, context).map(({ data }) => data);
+      const result = knownOf(bits, logic);
+      const isSure = errorsMet(scope.shared) === before && !context.store.aborted;
+      if (result?.unknown === 0n && isSure) value = result.value;
+    }
+    values.set(scope, value);
+  }
+  return value ?? undefined;
+}
+
+function hasConstantArguments(call: CallExpression, context: Context): boolean {
+  let isConstant = true;
+  forEachName(call.arguments, (name) => {
+    isConstant &&= plainMeaningOf(name, context)?.kind === 'parameter';
+  });
+  return isConstant;
+}
+
+/** Whether all calls in a part of the syntax tree are of functions whose arguments say it all. */
+export function areCallsPure(tree: unknown, context: Context): boolean {
+  let arePure = true;
+  walk(tree, (node) => {
+    if (node.kind === 'callTask') arePure = false;
+    if (node.kind === 'call') arePure &&= isPure(node as CallExpression, context);
+    return arePure;
+  });
+  return arePure;
+}
+
+function isPure(call: CallExpression, context: Context): boolean {
+  if (isSystemName(call.path, context)) return true;
+  const binding = resolveCalled(context.scope, call.path);
+  if (binding?.kind !== 'routine' || binding.syntax.kind !== 'function') return false;
+  return isPureFunction(binding.syntax, binding.scope, new Set(), context);
+}
+
+// Functions that call each other count as pure unless something else speaks against it.
+function isPureFunction(
+  routine: RoutineItem,
+  scope: Scope,
+  open: Set<RoutineItem>,
+  context: Context,
+): boolean {
+  if (open.has(routine)) return true;
+  open.add(routine);
+  const own = new Set<NameId>([routine.name]);
+  const declare = (items: readonly Item[]): void => {
+    for (const item of items) {
+      if (item.kind === 'declaration') for (const { name } of item.names) own.add(name);
+      if (item.kind === 'parameter') for (const { name } of item.values) own.add(name);
+    }
+  };
+  declare(routine.declarations);
+  let answer = true;
+  walk(routine.body, (node) => {
+    if (node.kind === 'block')
+      declare((node as { declarations?: readonly Item[] }).declarations ?? []);
+    if (node.kind === 'callTask') answer = false;
+    if (node.kind === 'call') {
+      const { path } = node as CallExpression;
+      const called = isSystemName(path, context) ? undefined : resolveCalled(scope, path);
+      if (called?.kind === 'routine') {
+        answer &&= isPureFunction(called.syntax, called.scope, open, context);
+      }
+    }
+    return answer;
+  });
+  forEachName(routine.body, ({ path }) => {
+    if (path.length === 1 && own.has(path[0]!)) return;
+    answer &&= scope.resolve(path)?.kind === 'parameter';
+  });
+  return answer;
+}
