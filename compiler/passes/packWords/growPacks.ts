@@ -1,5 +1,6 @@
 import { type Literal, type Logic, LogicOp, nodeOf } from '../../logic/logic.js';
 import { alignedOperands } from './alignment.js';
+import { islandsOf } from './islands.js';
 import { isOneNode, LANES, lanesOf, NO_NODE, Packs, type Tuple } from './packs.js';
 import { seedGroups } from './seeds.js';
 import { heightsOf, shapesOf, WHOLE_SHAPE } from './shapes.js';
@@ -39,6 +40,7 @@ const SEED_DEPTHS = [WHOLE_SHAPE, 12, 8, 5, 3, 2, 1];
 export function growPacks(logic: Logic): Packs {
   const grower = new Grower(logic);
   if (!grower.isPromising()) return grower.packs;
+  grower.findIslands();
   for (const depth of SEED_DEPTHS) grower.growAlike(depth);
   grower.growStates();
   return grower.packs;
@@ -49,6 +51,8 @@ class Grower {
   readonly #logic: Logic;
   readonly #shapes: readonly Uint32Array[];
   readonly #heights: Uint32Array;
+  /** See `islandsOf`. */
+  #islands: Uint32Array | undefined;
   /** Per state bit its node, or -1 where nothing reads it. */
   readonly #stateNode: Int32Array;
   /** Per node of a state bit, the nodes of the state bits that copy it. */
@@ -84,9 +88,20 @@ class Grower {
     return repeated >= operations * LEAST_REPEATED;
   }
 
+  /** Keeps packs from starting in several islands. */
+  findIslands(): void {
+    this.#islands = islandsOf(this.#logic, this.#shapes[REPEATED_DEPTH]!, LEAST_SEEDS);
+  }
+
   /** Starts packs from nodes whose cones look alike to a depth, the highest first. */
   growAlike(depth: number): void {
-    const groups = seedGroups(this.packs, this.#shapes[depth]!, this.#heights, LEAST_SEEDS);
+    const groups = seedGroups(
+      this.packs,
+      this.#shapes[depth]!,
+      this.#heights,
+      LEAST_SEEDS,
+      this.#islands,
+    );
     for (const group of groups) {
       for (const nodes of this.#lanesFor(group)) this.#start(nodes);
     }
