@@ -104,8 +104,8 @@ export function emitModel(
       runLoop(module, wasm.i32, place, cycles),
     );
     if (isGuarded) {
-      const { stateCount } = programs[0]!;
-      addQuietLoop(wasm, module, name, { areas, maskAt, stateCount, writes, layout });
+      const [program] = programs as [Program];
+      addQuietLoop(wasm, module, name, { areas, maskAt, program, writes, layout });
     } else module.addFunctionExport(name, name);
     if (passes.tables !== false && canHaveTable(cyclePrograms, layout))
       addTableLoop(wasm, module, layout);

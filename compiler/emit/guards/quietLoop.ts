@@ -4,8 +4,13 @@ import type { CyclePrograms, Program } from '../../program/program.js';
 
 const GROUP = 16;
 
-/** Most cycles between two looks whether all stands still: a look costs less than one of these. */
+/**
+ * Most and fewest cycles between two looks whether all stands still, where a circuit never rests, and
+ * the operations that are made between them else: a look costs about a hundredth of these.
+ */
 const MOST_PACE = 128;
+const LEAST_PACE = 4;
+const OPERATIONS_A_LOOK = 6000;
 
 /** Name of the global that is 1 where a cycle has written to a memory, until it is set to 0. */
 export const WROTE = 'wrote';
@@ -21,12 +26,18 @@ export function stateMask({ states, stateCount }: Program): Uint8Array {
   return mask;
 }
 
+function mostPace({ op, vectors }: Program): number {
+  const operations = 1 + op.length + (vectors?.steps.length ?? 0);
+  const pace = 2 ** Math.ceil(Math.log2(OPERATIONS_A_LOOK / operations));
+  return Math.min(MOST_PACE, Math.max(LEAST_PACE, pace));
+}
+
 /** What the loop works with. */
 export interface QuietPlace {
   readonly areas: readonly [number, number];
   /** Address of the mask of the state. */
   readonly maskAt: number;
-  readonly stateCount: number;
+  readonly program: Program;
   /** Whether cycles write to memories, and say so in `WROTE`. */
   readonly writes: boolean;
   readonly layout: ModelLayout;
@@ -56,7 +67,7 @@ const Local = {
  * the inputs stay too, a cycle costs a comparison of rows; where one row is held and nobody looks,
  * all of them cost nothing.
  *
- * It looks after 1, 2, 4 cycles and so on, so that a circuit which never rests hardly notices.
+ * It looks after 1, 2, 4 cycles and so on, up to `mostPace`, so that a circuit which never rests hardly notices.
  */
 export function addQuietLoop(
   wasm: typeof binaryen,
@@ -82,7 +93,7 @@ export function addQuietLoop(
     local.set(Local.Left, i32.sub(get(Local.Left), get(Local.Ran))),
     module.br('done', i32.or(i32.eqz(get(Local.Left)), i32.ne(get(Local.Ran), get(Local.Count)))),
     advance(module, get, get(Local.Ran)),
-    local.set(Local.Pace, lesser(Local.Pace, i32.const(MOST_PACE / 2))),
+    local.set(Local.Pace, lesser(Local.Pace, i32.const(mostPace(place.program) / 2))),
     local.set(Local.Pace, i32.shl(get(Local.Pace), i32.const(1))),
     module.if(
       isQuiet(wasm, module, place, get),
@@ -193,7 +204,7 @@ function quietCycles(
 // Whether both areas hold the same state. Where it differed last is looked at first.
 function addIsStill(wasm: typeof binaryen, module: binaryen.Module, place: QuietPlace): void {
   const { i32, local, global, v128 } = module;
-  const bytes = Math.ceil(place.stateCount / GROUP) * GROUP;
+  const bytes = Math.ceil(place.program.stateCount / GROUP) * GROUP;
   const at = 0;
   const differs = (offset: () => binaryen.ExpressionRef) => {
     const [first, second] = place.areas.map((area) => v128.load(area, 1, offset(), '0'));
