@@ -53,7 +53,8 @@ Example:
 export async function main(): Promise<void> {
   process.stdout.on('error', (error: NodeJS.ErrnoException) => {
     if (error.code === READER_GONE) process.exit(0);
-    throw error;
+    say(`error: standard output cannot be used: ${reason(error)}`);
+    process.exit(WRONG_INPUT);
   });
   try {
     await (await program()).parseAsync();

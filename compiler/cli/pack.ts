@@ -10,7 +10,7 @@ import { type NpmName, npmNameOf } from '../pack/packageJson.js';
 import { type PackSummary, packDesign } from '../pack/packDesign.js';
 import { FolderRefused } from '../pack/writePackage.js';
 import { REGISTER_LIMIT } from '../read/verilog/behaviour/memorySelect.js';
-import { figure } from '../report/figures.js';
+import { counted, figure } from '../report/figures.js';
 import { Progress } from '../run/progress.js';
 import { addClockOption, type ClockOptions, timedDesign } from './clockOption.js';
 import { addNetlistOptions, loadCircuit, type NetlistOptions } from './netlists.js';
@@ -149,7 +149,7 @@ function textOf({ model, output, page, files, check, keptNets }: PackSummary): s
   return [
     ...(output === undefined ? [] : [`${model} is packed in ${output}`, ...sizes]),
     ...(page === undefined ? [] : [`${model} as a page is ${page}`]),
-    `  ${figure(keptNets)} names to peek at`,
+    `  ${counted(keptNets, 'name')} to peek at`,
     `agrees with the reference over ${figure(check.cycles)} cycles of random inputs (seed ${check.seed})`,
   ].join('\n');
 }

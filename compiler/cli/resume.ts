@@ -9,6 +9,7 @@ import { FolderFiles } from '../record/recordFiles.js';
 import { RunRecord } from '../record/runRecord.js';
 import { DamagedFile } from '../record/sealedText.js';
 import { figure } from '../report/figures.js';
+import { shellWord } from '../report/shellText.js';
 import type { RunStart } from '../run/runRecorder.js';
 import { exitStatus, summaryText } from '../run/runSummary.js';
 import type { ReadFile } from './netlists.js';
@@ -53,7 +54,7 @@ async function resume(dir: string, { json }: { readonly json?: true }): Promise<
     ...(goesPast && { stopPast: past }),
   };
   if (result !== undefined && !goesPast) {
-    const over = `the run was over already; \`clockstride revisit ${dir}\` shows its cycles`;
+    const over = `the run was over already; \`clockstride revisit ${shellWord(dir)}\` shows its cycles`;
     const summary = { ...result, notes: [...result.notes, over] };
     const text = wanted.json
       ? JSON.stringify(summary, null, 2)

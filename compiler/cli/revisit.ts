@@ -3,7 +3,7 @@ import { Command, Option } from 'commander';
 import { startEmitter } from '../emit/emitter.js';
 import { type EngineName, engineNames } from '../engines.js';
 import type { RunRecord } from '../record/runRecord.js';
-import { figure } from '../report/figures.js';
+import { counted, figure } from '../report/figures.js';
 import { type Revisited, revisitDesign } from '../revisit/revisitDesign.js';
 import type { RunStart } from '../run/runRecorder.js';
 import type { RunSummary } from '../run/runSummary.js';
@@ -115,7 +115,7 @@ function shiftOf(dir: string, from: number, result: RunSummary | undefined): num
   const { repetition, cycles } = result;
   if (repetition === undefined) {
     throw new UsageError(
-      `error: ${dir}: the run has ${figure(cycles)} cycles, and its period is not known ` +
+      `error: ${dir}: the run has ${counted(cycles, 'cycle')}, and its period is not known ` +
         '(--find-period); --from must be less',
     );
   }
@@ -160,7 +160,7 @@ function report(options: RevisitOptions, seen: Revisited, told: Told): void {
   }
   const last = figure(from + shown - 1);
   const lines = told.waves.map(
-    ({ path, list }) => `${shownPath(path)}: ${figure(list.count)} signals of ${told.circuit}`,
+    ({ path, list }) => `${shownPath(path)}: ${counted(list.count, 'signal')} of ${told.circuit}`,
   );
   lines.push(
     `cycles ${figure(from)} to ${last}, from the checkpoint at cycle ${figure(told.start)} ` +

@@ -4,6 +4,7 @@ import type { StimulusBlock } from '../../runtime/stream.js';
 import type { Circuit } from '../circuit/circuit.js';
 import type { Design } from '../compile.js';
 import { REGISTER_LIMIT } from '../read/verilog/behaviour/memorySelect.js';
+import { shellText } from '../report/shellText.js';
 import { settlePicture } from '../settle/picture/settlePicture.js';
 import { MOST_LANES, settleDesign } from '../settle/settleDesign.js';
 import { isAllKnown } from '../settle/settleReport.js';
@@ -122,13 +123,8 @@ function rerunCommand(words: readonly string[], cycles: number): string {
       !OWN.some((option) => word.startsWith(`${option}=`)),
   );
   const length = ['--cycles', `${cycles}`];
-  return ['clockstride', 'run', ...kept, ...length, '--power-up', 'random', '--seed']
-    .map(quoted)
-    .join(' ');
+  return shellText(['clockstride', 'run', ...kept, ...length, '--power-up', 'random', '--seed']);
 }
-
-const quoted = (word: string): string =>
-  /^[\w@%+=:,./-]+$/.test(word) ? word : `'${word.replaceAll("'", "'\\''")}'`;
 
 function laneCount(text: string): number {
   const value = countArgument(text);

@@ -1,6 +1,6 @@
 import type { Engine, MarkingEngine, RunPoint } from '../../runtime/engine.js';
 import type { StimulusBlock } from '../../runtime/stream.js';
-import { figure } from '../report/figures.js';
+import { counted } from '../report/figures.js';
 import type {
   Findings,
   Outlet,
@@ -130,8 +130,8 @@ class SearchOutlet implements Outlet {
       return { notes: ['the run ended before its inputs were held: no period was looked for'] };
     }
     if (this.#period === undefined) {
-      const looked = figure(cycles - first.cycle);
-      return { notes: [`no state came again in ${looked} cycles with the inputs held`] };
+      const looked = counted(cycles - first.cycle, 'cycle');
+      return { notes: [`no state came again in ${looked} with the inputs held`] };
     }
     const end = this.#engine.save();
     const { interrupt } = this.#options;
@@ -141,7 +141,7 @@ class SearchOutlet implements Outlet {
       return { repetition: { leadIn: start, period } };
     } catch (error) {
       if (!interrupt?.aborted) throw error;
-      const known = `states repeat every ${period} cycles, at the latest from cycle`;
+      const known = `states repeat every ${counted(period, 'cycle')}, at the latest from cycle`;
       const note = `${known} ${this.#marks.at(-1)!.cycle} on; the first was not looked for`;
       return { notes: [note] };
     } finally {

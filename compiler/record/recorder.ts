@@ -1,4 +1,5 @@
 import { figure } from '../report/figures.js';
+import { shellWord } from '../report/shellText.js';
 import type { RunRecorder, RunStart } from '../run/runRecorder.js';
 import { INTERRUPTED, type RunSummary } from '../run/runSummary.js';
 import type { RunRecord } from './runRecord.js';
@@ -73,7 +74,9 @@ export class Recorder implements RunRecorder {
     await this.#writing;
     const isInterrupted = summary.stopped?.reason === INTERRUPTED;
     if (last !== undefined && last.cycle > this.#last) await this.#start(() => last);
-    const notes = isInterrupted ? [`go on with: clockstride resume ${this.#record.shown}`] : [];
+    const notes = isInterrupted
+      ? [`go on with: clockstride resume ${shellWord(this.#record.shown)}`]
+      : [];
     if (!isInterrupted) {
       await this.#attempt(() => this.#record.close(summary), 'the end of the run');
     }

@@ -1,5 +1,5 @@
 import type { createLogUpdate } from 'log-update';
-import { figure } from '../report/figures.js';
+import { counted, figure } from '../report/figures.js';
 import { rateText } from './runSummary.js';
 
 /** A run that takes no longer shows no progress. */
@@ -56,11 +56,11 @@ async function line(stream: NodeJS.WriteStream) {
 
 /** One line: `12,000,000 of 50,000,000 cycles, 24 %, 8.10 million cycles/s, 5 s left`. */
 export function progressText(cycles: number, total: number | undefined, perSecond: number): string {
-  if (total === undefined) return `${figure(cycles)} cycles, ${rateText(perSecond)}`;
+  if (total === undefined) return `${counted(cycles, 'cycle')}, ${rateText(perSecond)}`;
   const percent = Math.floor((100 * cycles) / Math.max(1, total));
   const left = Math.ceil((total - cycles) / perSecond);
   return (
-    `${figure(cycles)} of ${figure(total)} cycles, ${percent} %, ` +
+    `${figure(cycles)} of ${counted(total, 'cycle')}, ${percent} %, ` +
     `${rateText(perSecond)}, ${durationText(left)} left`
   );
 }

@@ -1,7 +1,7 @@
 import type { Departure } from '../../runtime/node/index.js';
 import type { PowerUp } from '../circuit/powerUp.js';
 import type { EngineName } from '../engines.js';
-import { figure } from '../report/figures.js';
+import { counted, figure } from '../report/figures.js';
 import { type ActivitySummary, activityLines } from './outlets/activitySummary.js';
 import { type BusEvent, busEventText } from './outlets/busEvent.js';
 import { type StatesSummary, statesLines } from './outlets/statesSummary.js';
@@ -68,7 +68,7 @@ const isTold = ({ stopped }: RunSummary): boolean =>
 export function summaryText(summary: RunSummary, expectation: string | undefined): string {
   const { cycles, seconds, cyclesPerSecond, engine, powerUp } = summary;
   const lines = [
-    `${figure(cycles)} cycles in ${seconds.toFixed(2)} s, ${rateText(cyclesPerSecond)}` +
+    `${counted(cycles, 'cycle')} in ${seconds.toFixed(2)} s, ${rateText(cyclesPerSecond)}` +
       ` (engine ${engine}, power-up ${powerUp})`,
   ];
   lines.push(...signatureLines(summary));

@@ -61,10 +61,16 @@ export class WholeFile {
     this.#length += piece.length;
   }
 
-  /** Completes the file and gives it its name. */
+  /** Completes the file and gives it its name; where that fails, nothing is left of it. */
   finish(): void {
     this.#close();
-    if (this.#partial !== undefined) renameSync(this.#partial, this.#target);
+    if (this.#partial === undefined) return;
+    try {
+      renameSync(this.#partial, this.#target);
+    } catch (error) {
+      rmSync(this.#partial, { force: true });
+      throw error;
+    }
   }
 
   /** Stops writing, but leaves the hidden file to be continued. */

@@ -11,6 +11,7 @@ import { forget } from '../../record/recordedResponse.js';
 import { Recorder } from '../../record/recorder.js';
 import { FolderFiles, isPartial } from '../../record/recordFiles.js';
 import { RunRecord } from '../../record/runRecord.js';
+import { shellWord } from '../../report/shellText.js';
 import type { RunStart } from '../../run/runRecorder.js';
 import type { ReadFile } from '../netlists.js';
 import { UsageError } from '../usageError.js';
@@ -86,7 +87,7 @@ export async function startRecord(
   if (names.includes('manifest.json')) {
     throw new UsageError(
       `error: ${folder} holds the record of a run already: go on with it by ` +
-        `\`clockstride resume ${folder}\`, or remove it`,
+        `\`clockstride resume ${shellWord(folder)}\`, or remove it`,
     );
   }
   if (names.length > 0) throw new UsageError(`error: --record: ${folder} is not empty`);

@@ -1,6 +1,7 @@
 import type { Command } from 'commander';
 import type { Design } from '../../compile.js';
 import { addConditions } from '../../condition/conditions.js';
+import { shellText } from '../../report/shellText.js';
 import type { OutletPlan } from '../../run/outlets/outlet.js';
 import { MOST_CONDITIONS, stopWhen } from '../../run/outlets/stopWhen.js';
 import { positiveArgument } from '../numbers.js';
@@ -104,8 +105,3 @@ function repeatedWords(words: readonly string[]): string[] {
   }
   return kept;
 }
-
-const shellText = (words: readonly string[]): string =>
-  words.map((word) => (/^[\w@%+=:,./-]+$/.test(word) ? word : quoted(word))).join(' ');
-
-const quoted = (word: string): string => `'${word.replaceAll("'", "'\\''")}'`;

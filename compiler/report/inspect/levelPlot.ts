@@ -1,6 +1,6 @@
+import { counted, figure } from '../figures.js';
 import type { Inspection } from '../inspection.js';
 import { type Bin, binLabel, binned } from './bins.js';
-import { counted } from './netWords.js';
 
 const WIDTH = 760;
 const LEFT = 96;
@@ -160,8 +160,6 @@ const text = (kind: string, x: number, y: number, anchor: string, content: strin
   `<text class="${kind}" x="${round(x)}" y="${round(y)}" text-anchor="${anchor}">${content}</text>`;
 
 const round = (value: number): number => Math.round(value * 100) / 100;
-
-const figure = (value: number): string => value.toLocaleString('en-US');
 
 const escaped = (content: string): string =>
   content.replace(/[<>&"]/g, (character) => `&#${character.charCodeAt(0)};`);

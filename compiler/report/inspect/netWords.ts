@@ -3,6 +3,7 @@ import { spanOfNet } from '../../circuit/analyses/netSpans.js';
 import type { Circuit } from '../../circuit/circuit.js';
 import { netName, primaryNames } from '../../circuit/hierarchy.js';
 import type { Span } from '../../diagnostics/source.js';
+import { figure } from '../figures.js';
 
 /** Writes out nets of one circuit by name and place. */
 export class NetWords {
@@ -48,12 +49,5 @@ export class NetWords {
 /** `a, b and 5 more`, where `total` counts those shown too. */
 export function listText(shown: readonly string[], total: number): string {
   const rest = total - shown.length;
-  return rest > 0
-    ? `${shown.join(', ')} and ${rest.toLocaleString('en-US')} more`
-    : shown.join(', ');
-}
-
-/** `1 gate`, `2 gates`; a plural that takes more than an s is given. */
-export function counted(count: number, one: string, several = `${one}s`): string {
-  return `${count.toLocaleString('en-US')} ${count === 1 ? one : several}`;
+  return rest > 0 ? `${shown.join(', ')} and ${figure(rest)} more` : shown.join(', ');
 }

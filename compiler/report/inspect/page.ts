@@ -1,7 +1,7 @@
+import { counted, figure } from '../figures.js';
 import type { Inspection, Problem } from '../inspection.js';
 import type { ClockSummary } from './clockSummary.js';
 import type { MemorySummary } from './memorySummary.js';
-import { counted } from './netWords.js';
 import type { PathStep } from './pathSummary.js';
 import { textPlot } from './textPlot.js';
 
@@ -27,11 +27,11 @@ export function inspectionPage(inspection: Inspection, paint: Paint = (text) => 
     ...clockRows(inspection),
     ['gates', tally(inspection.gates, inspection.gatesByKind)],
     ...cellRows(inspection),
-    ['registers', [number(registers)]],
-    ['latches', [number(latches)]],
+    ['registers', [figure(registers)]],
+    ['latches', [figure(latches)]],
     ...memoryRows(inspection),
     ['state', stateWords(inspection)],
-    ['loops', [number(loops)]],
+    ['loops', [figure(loops)]],
     ['depth', [`${counted(depth, 'level')} of gates`]],
     ...pathRows(inspection.deepestPath),
     ['fan-out', fanoutWords(inspection)],
@@ -44,8 +44,6 @@ export function inspectionPage(inspection: Inspection, paint: Paint = (text) => 
     ...problemLines(inspection.problems, paint),
   ].join('\n');
 }
-
-const number = (value: number): string => value.toLocaleString('en-US');
 
 /** Words behind a label, in as many lines as it takes; words are never broken. */
 function wrapped(label: string, words: readonly string[]): string[] {
@@ -69,7 +67,7 @@ const enumerated = (items: readonly string[]): string[] =>
 
 function shortened(items: readonly string[], most: number): string[] {
   const rest = items.length - most;
-  return rest > 0 ? [...items.slice(0, most), `and ${number(rest)} more`] : [...items];
+  return rest > 0 ? [...items.slice(0, most), `and ${figure(rest)} more`] : [...items];
 }
 
 function portWords(ports: Inspection['inputs']): string[] {
@@ -94,21 +92,21 @@ function clockText(clock: ClockSummary): string {
   const { port, registers, direct, falling, latches } = clock;
   const ways = (['direct', 'buffered', 'gated', 'divided'] as const)
     .filter((way) => clock[way] > 0)
-    .map((way) => `${number(clock[way])} ${way}`);
+    .map((way) => `${figure(clock[way])} ${way}`);
   const parts = [counted(registers, 'register')];
   if (direct < registers) parts[0] += `: ${ways.join(', ')}`;
-  if (falling > 0) parts.push(`${number(falling)} on its falling edge`);
+  if (falling > 0) parts.push(`${figure(falling)} on its falling edge`);
   if (latches > 0) parts.push(counted(latches, 'latch', 'latches'));
   return `${port} (${parts.join('; ')})`;
 }
 
 function tally(total: number, counts: Readonly<Record<string, number>>): string[] {
   const words = tallied(Object.entries(counts));
-  return words.length === 0 ? [number(total)] : [`${number(total)}:`, ...words];
+  return words.length === 0 ? [figure(total)] : [`${figure(total)}:`, ...words];
 }
 
 function tallied(counts: readonly (readonly [string, number])[]): string[] {
-  const words = counts.map(([name, count]) => `${number(count)} ${name}`);
+  const words = counts.map(([name, count]) => `${figure(count)} ${name}`);
   return enumerated(shortened(words, MOST_KINDS));
 }
 
@@ -134,11 +132,11 @@ function stateWords({ state, registers, latches }: Inspection): string[] {
   const { bits, loopBits, withSet, withReset, initial, unset } = state;
   if (bits === 0) return ['none'];
   const parts = [
-    loopBits > 0 ? `${number(loopBits)} in loops` : '',
-    withReset > 0 ? `${number(withReset)} with reset` : '',
-    withSet > 0 ? `${number(withSet)} with set` : '',
-    initial > 0 ? `${number(initial)} with an initial value` : '',
-    unset > 0 && unset < registers + latches ? `${number(unset)} with none of these` : '',
+    loopBits > 0 ? `${figure(loopBits)} in loops` : '',
+    withReset > 0 ? `${figure(withReset)} with reset` : '',
+    withSet > 0 ? `${figure(withSet)} with set` : '',
+    initial > 0 ? `${figure(initial)} with an initial value` : '',
+    unset > 0 && unset < registers + latches ? `${figure(unset)} with none of these` : '',
     unset > 0 && unset === registers + latches ? 'none with set, reset or initial value' : '',
   ].filter((part) => part !== '');
   const total = counted(bits, 'bit');
@@ -151,7 +149,7 @@ function pathRows(steps: readonly PathStep[]): [string, string[]][] {
   const half = MOST_STEPS / 2;
   const rest = words.length - MOST_STEPS;
   const shown =
-    rest > 1 ? [...words.slice(0, half), `(${number(rest)} more)`, ...words.slice(-half)] : words;
+    rest > 1 ? [...words.slice(0, half), `(${figure(rest)} more)`, ...words.slice(-half)] : words;
   return [['deepest', shown.map((word, i) => (i > 0 ? `> ${word}` : word))]];
 }
 
@@ -172,7 +170,7 @@ const fanoutWords = ({ fanouts }: Inspection): string[] =>
 function plotLines({ levels, gates }: Inspection, paint: Paint): string[] {
   if (levels.length < 2) return [];
   const without = levels[0]!;
-  const heading = without > 0 ? `, ${number(without)} of ${number(gates)} in or behind loops` : '';
+  const heading = without > 0 ? `, ${figure(without)} of ${figure(gates)} in or behind loops` : '';
   const rows = textPlot(levels, 1, PLOT_WIDTH).map((row) => `    ${row}`);
   return [`  ${paint('gates by level', 'heading')}${heading}`, ...rows];
 }
@@ -190,6 +188,6 @@ function problemLines(problems: readonly Problem[], paint: Paint): string[] {
     return `    ${place}${painted}: ${message} [${code}]`;
   });
   const rest = problems.length - MOST_PROBLEMS;
-  if (rest > 0) lines.push(`    and ${number(rest)} more; --json has all`);
+  if (rest > 0) lines.push(`    and ${figure(rest)} more; --json has all`);
   return [`  ${heading}   ${problems.length}`, ...lines];
 }

@@ -1,3 +1,4 @@
+import { figure } from '../figures.js';
 import { binLabel, binned } from './bins.js';
 
 const MOST_ROWS = 16;
@@ -10,7 +11,7 @@ export function textPlot(counts: readonly number[], first: number, width: number
   const bins = binned(counts, first, MOST_ROWS);
   const most = bins.reduce((so, { count }) => Math.max(so, count), 1);
   const labels = bins.map(binLabel);
-  const figures = bins.map(({ count }) => count.toLocaleString('en-US'));
+  const figures = bins.map(({ count }) => figure(count));
   const labelWidth = Math.max(...labels.map((label) => label.length));
   const longest = width - labelWidth - 2 - 2 - Math.max(...figures.map((text) => text.length));
   return bins.map(({ count }, row) => {

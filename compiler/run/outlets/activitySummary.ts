@@ -1,4 +1,4 @@
-import { figure } from '../../report/figures.js';
+import { counted, figure } from '../../report/figures.js';
 
 /** What the nets of a circuit did in a run, in short; clocks are left out. */
 export interface ActivitySummary {
@@ -29,7 +29,7 @@ export function activityLines(activity: ActivitySummary | undefined): string[] {
   const { cycles, nets, toggles, busiestNets, busiestBlocks } = activity;
   const perNet = nets * cycles === 0 ? 0 : toggles / (nets * cycles);
   const lines = [
-    `activity: ${figure(toggles)} toggles of ${figure(nets)} nets in ${figure(cycles)} cycles, ` +
+    `activity: ${counted(toggles, 'toggle')} of ${counted(nets, 'net')} in ${counted(cycles, 'cycle')}, ` +
       `${Number(perNet.toPrecision(3))} per net and cycle; clocks apart`,
   ];
   if (busiestNets.length > 0) {

@@ -1,4 +1,4 @@
-import { figure } from '../../report/figures.js';
+import { counted, figure } from '../../report/figures.js';
 import type {
   Findings,
   Outlet,
@@ -121,7 +121,7 @@ class StopOutlet implements Outlet {
     if (cycles < this.#taken) return {};
     const past = this.#past < 0 ? '' : `after cycle ${figure(this.#past)}, `;
     const told = this.#conditions.map(({ text }, i) => `${text} ${this.#times(i)}`);
-    return { notes: told.map((text) => `${text} ${past}in ${figure(cycles)} cycles`) };
+    return { notes: told.map((text) => `${text} ${past}in ${counted(cycles, 'cycle')}`) };
   }
 
   discard(): void {

@@ -1,4 +1,4 @@
-import { figure } from '../../report/figures.js';
+import { counted, figure } from '../../report/figures.js';
 import type { ElementReport, Witness } from '../settleReport.js';
 import { type FoldedName, foldNames } from './foldNames.js';
 import { grouped } from './grouped.js';
@@ -55,7 +55,7 @@ function witnessRow({ name, items }: FoldedName<Differing>, cycles: number): Row
   const other = Math.min(...items.map(({ witness }) => witness.lanes[1]));
   const first = items.map(({ witness }) => witness.values[0]);
   const second = items.map(({ witness }) => witness.values[witness.lanes[1] === other ? 1 : 0]);
-  const when = after === cycles ? '' : ` after ${figure(after)} cycles`;
+  const when = after === cycles ? '' : ` after ${counted(after, 'cycle')}`;
   const cells =
     items.length > MOST_DIGITS * 4
       ? [`${figure(unlike(first, second))} bits differ in lanes ${lanes[0]} and ${other}${when}`]

@@ -1,4 +1,4 @@
-import { figure } from '../../report/figures.js';
+import { counted } from '../../report/figures.js';
 import type { StatesSummary } from '../../run/outlets/statesSummary.js';
 import { escaped, round } from '../../waveform/picture/svgText.js';
 import { statesGraph } from '../statesGraph.js';
@@ -58,14 +58,14 @@ function firstOf(summary: StatesSummary): StatesSummary {
 
 function caption(registers: readonly StatesSummary[], cycles: number): string {
   const part = registers.some(isPart) ? '; the first ones of more than can be drawn' : '';
-  return `${figure(cycles)} cycles, the first state with a double outline${part}`;
+  return `${counted(cycles, 'cycle')}, the first state with a double outline${part}`;
 }
 
 const description = (registers: readonly StatesSummary[], cycles: number): string =>
   `${caption(registers, cycles)}. ${registers
     .map(
       ({ register, states, transitions }) =>
-        `${register} has been in ${figure(states.length)} states and taken ` +
-        `${figure(transitions.length)} transitions.`,
+        `${register} has been in ${counted(states.length, 'state')} and taken ` +
+        `${counted(transitions.length, 'transition')}.`,
     )
     .join(' ')}`;

@@ -23,7 +23,10 @@ export async function* inputBytes(path: string): AsyncGenerator<Uint8Array, void
   } catch (error) {
     // Whoever is interrupted lets go of standard input, which then ends.
     const isLeft = (error as NodeJS.ErrnoException).code === 'ERR_STREAM_PREMATURE_CLOSE';
-    if (!(isLeft && path === STANDARD)) throw error;
+    if (isLeft && path === STANDARD) return;
+    // What fails while reading, as a directory does, comes without its name.
+    const isNamed = !('syscall' in (error as object)) || 'path' in (error as object);
+    throw isNamed ? error : Object.assign(error as Error, { path });
   }
 }
 

@@ -56,9 +56,10 @@ export class ModelExpectation implements ResponseChecker {
     const module = await UserModule.load(path);
     const { inputs, outputs, threeValued } = layout;
     const run: ModelRun = { inputs: inputs.ports, outputs: outputs.ports, threeValued };
+    const main = module.main();
     let step: unknown;
     try {
-      step = await module.main()(run);
+      step = await main(run);
     } catch (error) {
       throw module.error(error, 'before the run');
     }

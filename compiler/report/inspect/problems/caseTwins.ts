@@ -1,5 +1,6 @@
 import { caseTwins } from '../../../circuit/analyses/caseTwins.js';
-import { counted, listText } from '../netWords.js';
+import { counted } from '../../figures.js';
+import { listText } from '../netWords.js';
 import type { ProblemContext } from './context.js';
 
 const SHOWN = 4;

@@ -2,9 +2,10 @@ import { NO_ROOTS } from '../../../circuit/analyses/rootSets.js';
 import { NO_NET } from '../../../circuit/ids.js';
 import { memoryWrites } from '../../../circuit/memoryPorts.js';
 import { writePins } from '../../../circuit/memoryTable.js';
+import { counted } from '../../figures.js';
 import { gatedClocks } from '../gatedClocks.js';
 import { memorySpan } from '../memorySummary.js';
-import { counted, listText } from '../netWords.js';
+import { listText } from '../netWords.js';
 import type { ProblemContext } from './context.js';
 
 const SHOWN = 4;

@@ -1,5 +1,6 @@
 import { Crossings } from '../../../circuit/analyses/crossings.js';
-import { counted, listText } from '../netWords.js';
+import { counted } from '../../figures.js';
+import { listText } from '../netWords.js';
 import type { ProblemContext } from './context.js';
 
 const SHOWN = 4;

@@ -3,7 +3,7 @@ import { GateKind } from '../../../circuit/gates.js';
 import { NO_NET } from '../../../circuit/ids.js';
 import { memoryWrites } from '../../../circuit/memoryPorts.js';
 import { writePins } from '../../../circuit/memoryTable.js';
-import { counted } from '../netWords.js';
+import { counted } from '../../figures.js';
 import type { ProblemContext } from './context.js';
 
 /** Inputs of gates and pins of state elements on named nets without driver. */

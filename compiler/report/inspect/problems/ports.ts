@@ -1,6 +1,7 @@
 import { readCounts } from '../../../circuit/analyses/readCounts.js';
 import { portBitName } from '../../../circuit/clockPorts.js';
-import { counted, listText } from '../netWords.js';
+import { counted } from '../../figures.js';
+import { listText } from '../netWords.js';
 import type { ProblemContext } from './context.js';
 
 const SHOWN = 8;

@@ -1,5 +1,5 @@
 import { pulsesOf } from '../../../circuit/pulses.js';
-import { counted } from '../netWords.js';
+import { counted } from '../../figures.js';
 import type { ProblemContext } from './context.js';
 
 /** Registers whose set or reset follows from their own outputs. */

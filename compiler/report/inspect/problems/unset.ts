@@ -1,5 +1,5 @@
 import { openStarts } from '../../../circuit/startingRegisters.js';
-import { counted } from '../netWords.js';
+import { counted, figure } from '../../figures.js';
 import type { ProblemContext } from './context.js';
 
 /** Registers that nothing in the netlist brings to a known value. */
@@ -8,7 +8,7 @@ export function findUnset({ design, words, diagnostics }: ProblemContext): void 
   const unset = openStarts(design).map((r) => output[r]!);
   if (unset.length === 0) return;
   const message =
-    `${unset.length.toLocaleString('en-US')} of ${counted(count, 'register')} ` +
+    `${figure(unset.length)} of ${counted(count, 'register')} ` +
     `${unset.length === 1 ? 'has' : 'have'} neither an initial value nor a set or reset, ` +
     `and no held input makes ${unset.length === 1 ? 'it' : 'them'} known: ` +
     words.list(unset);

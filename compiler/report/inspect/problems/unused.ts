@@ -1,7 +1,8 @@
 import { readCounts } from '../../../circuit/analyses/readCounts.js';
 import { unusedParts } from '../../../circuit/analyses/unused.js';
+import { counted } from '../../figures.js';
 import { memorySpan } from '../memorySummary.js';
-import { counted, listText } from '../netWords.js';
+import { listText } from '../netWords.js';
 import type { ProblemContext } from './context.js';
 
 /** Gates, and state elements, that make no difference to any output. */
