@@ -1,8 +1,9 @@
 import type { Circuit } from './circuit.js';
+import { gateInfo } from './gates.js';
 import { netName, primaryNames } from './hierarchy.js';
 
 /**
- * Names nets for a message: `a (top.v:12), b (top.v:13) and 5 more`.
+ * Names nets for a message: `a (top.v:12), nand at top.v:13 and 5 more`.
  *
  * Names come with the line of the net's driver where a source is known. At most `limit` are
  * written out (default 8).
@@ -11,7 +12,7 @@ export function describeNets(circuit: Circuit, nets: ArrayLike<number>, limit = 
   const names = primaryNames(circuit.hierarchy, circuit.netCount);
   const shown = Array.from(nets)
     .slice(0, limit)
-    .map((net) => netName(circuit.hierarchy, names, net) + placeOf(circuit, net));
+    .map((net) => placedNet(circuit, names, net));
   const rest = nets.length - shown.length;
   return rest > 0 ? `${shown.join(', ')} and ${rest} more` : shown.join(', ');
 }
@@ -24,8 +25,19 @@ export function placeOfNet(circuit: Circuit, net: number): string {
   return `${source.path}:${line}:${column}`;
 }
 
-function placeOf(circuit: Circuit, net: number): string {
+/**
+ * A net with the line of what drives it: `a (top.v:12)`, or `nand at top.v:12` where it has no
+ * name. `shown` makes what is written of the path of a file.
+ */
+export function placedNet(
+  circuit: Circuit,
+  names: Int32Array,
+  net: number,
+  shown = (path: string): string => path,
+): string {
   const source = circuit.sources[circuit.originSource[net]!];
-  if (source === undefined) return '';
-  return ` (${source.path}:${source.place(circuit.originOffset[net]!).line})`;
+  const name = netName(circuit.hierarchy, names, net);
+  if (source === undefined) return name;
+  const line = `${shown(source.path)}:${source.place(circuit.originOffset[net]!).line}`;
+  return names[net]! < 0 ? `${gateInfo(circuit.kind[net]!).name} at ${line}` : `${name} (${line})`;
 }

@@ -18,6 +18,8 @@ describe('describeNets', () => {
     const source = builder.addSource(new Source('top.v', 'line one\nline two\n'));
     builder.at(source, 12);
     const net = builder.gate(GateKind.Zero, []);
-    expect(describeNets(builder.finish('top'), [net])).toBe('net 0 (top.v:2)');
+    const inverted = builder.gate(GateKind.Not, [net]);
+    const circuit = builder.finish('top');
+    expect(describeNets(circuit, [inverted])).toBe('not at top.v:2');
   });
 });

@@ -2,6 +2,7 @@ import { basename } from 'node:path';
 import { spanOfNet } from '../../circuit/analyses/netSpans.js';
 import type { Circuit } from '../../circuit/circuit.js';
 import { netName, primaryNames } from '../../circuit/hierarchy.js';
+import { placedNet } from '../../circuit/netPlaces.js';
 import type { Span } from '../../diagnostics/source.js';
 import { figure } from '../figures.js';
 
@@ -15,8 +16,9 @@ export class NetWords {
     this.#names = primaryNames(circuit.hierarchy, circuit.netCount);
   }
 
-  /** The name nearest to the top, or `net 17`. */
+  /** The name nearest to the top, or `nand at file.v:12` where it has none. */
   name(net: number): string {
+    if (!this.hasName(net)) return this.placed(net);
     return netName(this.#circuit.hierarchy, this.#names, net);
   }
 
@@ -29,11 +31,9 @@ export class NetWords {
     return spanOfNet(this.#circuit, net);
   }
 
-  /** `name (file.v:12)`, without the folder. */
+  /** `name (file.v:12)`, or `nand at file.v:12`, without the folder. */
   placed(net: number): string {
-    const span = this.span(net);
-    if (span === undefined) return this.name(net);
-    return `${this.name(net)} (${basename(span.source.path)}:${span.source.place(span.start).line})`;
+    return placedNet(this.#circuit, this.#names, net, basename);
   }
 
   /** `a (top.v:12), b (top.v:13) and 5 more`; at most `limit` are written out (default 4). */
