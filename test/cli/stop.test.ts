@@ -106,6 +106,20 @@ describe('run --stop-when', () => {
     expect(summaryOf(departed.stdout)).toMatchObject({ cycles: 4, notes: [] });
   });
 
+  it('refuses at once what never holds because a clock is inactive', async () => {
+    for (const text of ['clk', 'clk && n == 3', '!(u.clk ^ 1) && in[0]']) {
+      const { status, stderr } = await folder.run('run', 'box.v', '--stop-when', text);
+      expect({ status, stderr }).toEqual({
+        status: 2,
+        stderr:
+          `error: --stop-when: ${text} never holds, for the clock clk is 0 whenever outputs ` +
+          'are sampled\n',
+      });
+    }
+    const args = ['run', 'box.v', '--json', '--stop-when', '!clk && (u.clk || n == 3)'];
+    expect(summaryOf((await folder.run(...args)).stdout).stopped?.cycle).toBe(3);
+  });
+
   it('refuses what it cannot read, at its place', async () => {
     const { status, stdout, stderr } = await folder.run('run', 'box.v', '--stop-when', 'n == m');
     expect({ status, stdout }).toEqual({ status: 2, stdout: '' });

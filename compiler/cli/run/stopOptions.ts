@@ -1,6 +1,7 @@
 import type { Command } from 'commander';
 import type { Design } from '../../compile.js';
 import { addConditions } from '../../condition/conditions.js';
+import { sampledLevel } from '../../condition/sampledLevel.js';
 import { shellText } from '../../report/shellText.js';
 import type { OutletPlan } from '../../run/outlets/outlet.js';
 import { MOST_CONDITIONS, stopWhen } from '../../run/outlets/stopWhen.js';
@@ -59,6 +60,7 @@ export function stopsOf(design: Design, options: StopOptions, record?: string): 
     ...{ threeValued, name: '--stop-when' },
   });
   const conditions = texts.map((text, i) => ({ text: text.trim(), net: nets[i]! }));
+  for (const { text, net } of conditions) refuseInactive({ ...design, circuit }, text, net);
   const lookAround = (cycle: number): string => lookingAround(cycle, record);
   return {
     design: { ...design, circuit },
@@ -66,6 +68,17 @@ export function stopsOf(design: Design, options: StopOptions, record?: string): 
     // Not the key of `shownDesign` for the same texts.
     key: `stop ${JSON.stringify(texts)}`,
   };
+}
+
+// Whoever names a clock means its edge, and would wait for ever.
+function refuseInactive({ circuit, clocks }: Design, text: string, net: number): void {
+  const { level, clocks: read } = sampledLevel(circuit, clocks.ports, net);
+  const [clock] = read;
+  if (level !== 0 || clock === undefined) return;
+  throw new UsageError(
+    `error: --stop-when: ${text} never holds, for the clock ${clock.name} is ${clock.inactive} ` +
+      'whenever outputs are sampled',
+  );
 }
 
 /** Cycles that are shown before and after the one in which a run stopped. */
