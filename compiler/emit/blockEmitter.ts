@@ -37,6 +37,14 @@ export interface Emission {
   readonly memories: MemoryPlaces;
   /** Whether operations are kept in order by fences. */
   readonly fences: boolean;
+  /** Where state bits stand in locals while cycles run; in the areas unless given. */
+  readonly held?: HeldStates;
+}
+
+/** First of the locals that hold the state bits before the cycle, and of those that take the next. */
+export interface HeldStates {
+  readonly now: number;
+  readonly next: number;
 }
 
 /** Per lane of a vector, the byte of a number whose bit it takes, and the bit. */
@@ -282,6 +290,8 @@ export class BlockEmitter {
       return i32.load8_u(this.#emission.area.slots + lane, 1, pointer, '0');
     }
     if (value < this.#firstResult) {
+      const { held } = this.#emission;
+      if (held) return local.get(held.now + value - this.#firstState, this.#emission.i32);
       const pointer = local.get(this.#pointers.current, this.#emission.i32);
       return i32.load8_u(value - this.#firstState, 1, pointer, '0');
     }
@@ -328,6 +338,11 @@ export class BlockEmitter {
 
   #store(offset: number, code: binaryen.ExpressionRef, isWide = false): void {
     const { i32, local } = this.#emission.module;
+    const { held, program } = this.#emission;
+    if (held && offset < program.stateCount) {
+      this.statements.push(local.set(held.next + offset, code));
+      return;
+    }
     const pointer = local.get(this.#pointers.next, this.#emission.i32);
     this.statements.push(
       isWide ? i32.store(offset, 1, pointer, code, '0') : i32.store8(offset, 1, pointer, code, '0'),

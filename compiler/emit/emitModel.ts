@@ -14,6 +14,7 @@ import { BlockEmitter, type Emission, type Pointers } from './blockEmitter.js';
 import { compareState } from './compareState.js';
 import { LEAVE, STRETCH } from './fence.js';
 import { addQuietLoop, canBeQuiet, stateMask, WROTE } from './guards/quietLoop.js';
+import { addHeldLoop, canHold } from './heldLoop.js';
 import { emitWrites } from './memory/writeCode.js';
 import { packedCycle } from './packedCycle.js';
 import {
@@ -88,8 +89,15 @@ export function emitModel(
     const parameters = wasm.createType(new Array(RunLocal.Current).fill(wasm.i32));
     const localCount = Math.max(...cycles.map((cycle) => cycle.localCount));
     const locals = new Array<binaryen.Type>(localCount - RunLocal.Current).fill(wasm.i32);
+    const areaSum = areas[0] + areas[1];
+    const { fences = true, holdStates = true } = passes;
+    const ahead =
+      holdStates && !comparesState && canHold(cyclePrograms)
+        ? addHeldLoop(wasm, module, programs[0]!, { area: layouts[0]!, memories, fences, areaSum })
+        : undefined;
     const place = {
-      ...{ areaSum: areas[0] + areas[1], patternAt, patternLength: pattern.length },
+      ...(ahead && { ahead }),
+      ...{ areaSum, patternAt, patternLength: pattern.length },
       ...(comparesState && {
         afterCycle: (leave: () => binaryen.ExpressionRef) =>
           compareState(wasm, module, programs[0]!.stateCount, leave).afterCycle,

@@ -26,6 +26,8 @@ export interface PassSwitches {
   readonly choosePolarity?: boolean;
   /** Cones that share logic are computed one after another. */
   readonly orderSinks?: boolean;
+  /** A handful of state bits stand in locals while cycles run. */
+  readonly holdStates?: boolean;
   /** Branches that are never taken keep operations in their order. */
   readonly fences?: boolean;
   /** Outputs that are neighbouring registers are not stored again. */
@@ -50,6 +52,7 @@ export const passNames = [
   'rewriteCuts',
   'choosePolarity',
   'orderSinks',
+  'holdStates',
   'fences',
   'aliasOutputs',
   'guards',

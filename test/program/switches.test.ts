@@ -90,7 +90,8 @@ describe('each switch', () => {
       const rest =
         name === 'packWords' ? {} : name === 'rewriteCuts' ? { packWords: false } : alone;
       const changed = (await bytes({ ...rest, [name]: false })) !== (await bytes(rest));
-      expect(changed, name).toBe(name !== 'tables');
+      // The state is too large for some.
+      expect(changed, name).toBe(name !== 'tables' && name !== 'holdStates');
     }
     expect(await bytes({ packWords: true })).toBe(whole);
   });
