@@ -1,5 +1,6 @@
 import { Char, isSpace } from './characters.js';
 import { decode } from './decode.js';
+import { isLineEnd } from './macros.js';
 import type { Scanner } from './scan.js';
 import { endOfName } from './textEnds.js';
 
@@ -34,4 +35,26 @@ export function readBetween(tokens: Scanner, open: number, close: number): strin
   if (text[end] !== close) return undefined;
   tokens.at = end + 1;
   return decode(text, start, end);
+}
+
+/** Goes to the sign behind the default of a macro's argument, on the same line; returns it, or -1. */
+export function skipDefault(tokens: Scanner): number {
+  const ends: readonly (number | undefined)[] = [
+    Char.Comma,
+    Char.RightParen,
+    Char.LineFeed,
+    undefined,
+  ];
+  while (!ends.includes(tokens.text[tokens.at])) tokens.at++;
+  return tokens.text[tokens.at] ?? -1;
+}
+
+/** Goes past blanks, and past ends of lines with a backslash in front; returns what comes, or -1. */
+export function skipContinued(tokens: Scanner): number {
+  for (;;) {
+    const next = tokens.skipBlank(false);
+    const { text, at } = tokens;
+    if (next !== Char.Backslash || !isLineEnd(text, at + 1)) return next;
+    tokens.at = text.indexOf(Char.LineFeed, at) + 1;
+  }
 }

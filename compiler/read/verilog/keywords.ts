@@ -76,15 +76,3 @@ export const wordsLikeNames: ReadonlySet<string> = new Set([
   ...libraryWords,
   ...['edge', 'event', 'large', 'medium', 'small', 'table', 'uwire'],
 ]);
-
-/** Words that later standards reserve, and that explain an error where Verilog has a name. */
-export const laterWords: ReadonlySet<string> = new Set([
-  ...['alias', 'always_comb', 'always_ff', 'always_latch', 'assert', 'assume', 'bind', 'bit'],
-  ...['break', 'byte', 'chandle', 'class', 'clocking', 'const', 'continue', 'cover', 'do'],
-  ...['endclass', 'endclocking', 'endinterface', 'endpackage', 'endprogram', 'endproperty'],
-  ...['enum', 'export', 'extends', 'extern', 'final', 'foreach', 'iff', 'import', 'int'],
-  ...['interface', 'logic', 'longint', 'modport', 'new', 'package', 'packed', 'priority'],
-  ...['program', 'property', 'rand', 'ref', 'return', 'sequence', 'shortint', 'shortreal'],
-  ...['static', 'string', 'struct', 'super', 'this', 'timeprecision', 'timeunit', 'type'],
-  ...['typedef', 'union', 'unique', 'var', 'virtual', 'void'],
-]);

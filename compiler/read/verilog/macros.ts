@@ -144,7 +144,8 @@ function joined(pieces: readonly Uint8Array[]): Uint8Array {
   return whole;
 }
 
-function isLineEnd(text: Uint8Array, at: number): boolean {
+/** Whether a line ends at an offset. */
+export function isLineEnd(text: Uint8Array, at: number): boolean {
   return text[at] === Char.LineFeed || (text[at] === 13 && text[at + 1] === Char.LineFeed);
 }
 

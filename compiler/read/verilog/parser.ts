@@ -2,7 +2,8 @@ import type { Position } from '../../diagnostics/sourceMap.js';
 import type { NameId, NameTable } from '../names.js';
 import { belongsBefore, escapedNameHint, mergeMarkHint } from './failureText.js';
 import { InstanceTable } from './instances.js';
-import { Keyword, keywords, laterWords, wordsLikeNames } from './keywords.js';
+import { Keyword, keywords, wordsLikeNames } from './keywords.js';
+import { laterSignHint, laterWordHint } from './laterStandard.js';
 import type { Preprocessor } from './preprocess.js';
 import type { Problems } from './problems.js';
 import type { Scanner } from './scan.js';
@@ -85,7 +86,7 @@ export class Parser {
     const around = { text, before: isNear ? lastEnd - base : 0, found: start - base };
     const isBefore = belongsBefore(expected, around);
     const found = `${this.found()}${isBefore ? ' on a later line' : ''}`;
-    const message = `expected ${expected}, found ${found}${this.#hint(around)}`;
+    const message = `expected ${expected}, found ${found}${this.#hint(expected, around)}`;
     const place = isBefore ? { start: lastEnd, end: lastEnd } : { start, end };
     this.problems.add('syntax-error', message, place.start, place.end);
   }
@@ -179,7 +180,7 @@ export class Parser {
     return undefinedAt >= this.tokens.lastEnd && undefinedAt <= this.tokens.start;
   }
 
-  #hint(around: Parameters<typeof escapedNameHint>[0]): string {
+  #hint(expected: string, around: Parameters<typeof escapedNameHint>[0]): string {
     const { kind, value } = this.tokens;
     const hint = mergeMarkHint(kind, around) || escapedNameHint(around);
     if (hint !== '') return hint;
@@ -188,9 +189,8 @@ export class Parser {
       return `; as a name, a reserved word is written with a backslash and a space: \\${reserved} `;
     }
     const ids = [this.#firstWord, this.#lastName, kind === Token.Identifier ? value : 0];
-    const word = ids.map((id) => this.names.text(id)).find((text) => laterWords.has(text));
-    if (word === undefined) return '';
-    return `; '${word}' is a keyword of SystemVerilog, but IEEE 1364-2005 Verilog is read here`;
+    const hints = ids.map((id) => laterWordHint(this.names.text(id)));
+    return hints.find((text) => text !== '') ?? laterSignHint(kind, expected, around);
   }
 }
 

@@ -5,7 +5,8 @@ import type { NameId, NameTable } from '../names.js';
 import { faultOfText } from '../textForm.js';
 import { Char, CharClass, charClass, isSpace } from './characters.js';
 import { Conditionals, type Place } from './conditionals.js';
-import { readBetween, readLine, readWord } from './directiveText.js';
+import { readBetween, readLine, readWord, skipContinued, skipDefault } from './directiveText.js';
+import { laterSyntax } from './laterStandard.js';
 import { type Macro, macroActuals, macroBody, substitute } from './macros.js';
 import type { Problems } from './problems.js';
 import { Scanner, type ScannerClient } from './scan.js';
@@ -208,8 +209,14 @@ export class Preprocessor implements ScannerClient {
     let separator: number;
     do {
       tokens.at++;
+      skipContinued(tokens);
       const name = readWord(tokens);
-      separator = tokens.skipBlank(false);
+      separator = skipContinued(tokens);
+      if (separator === Char.Equals) {
+        const message = laterSyntax("a macro's default", 'give the argument wherever it is used');
+        this.#problem(message, place);
+        separator = skipDefault(tokens);
+      }
       if (name === '' || (separator !== Char.Comma && separator !== Char.RightParen)) {
         this.#problem("the arguments of a macro are names between '(' and ')'", place);
         return formals;

@@ -4,6 +4,7 @@ import { Char, CharClass, charClass, isNamePart, isSpace } from './characters.js
 import { decode } from './decode.js';
 import { strayText } from './failureText.js';
 import { currentVersion, reservedWords } from './keywords.js';
+import { laterQuote } from './laterStandard.js';
 import { baseOfLetter, SIGNED_BASE } from './numbers.js';
 import { scanOperator, singleTokens } from './operators.js';
 import {
@@ -372,11 +373,9 @@ export class Scanner {
     const base = baseOfLetter(letter);
     if (base === 0) {
       this.at = start + 1;
-      this.#problem(
-        "after ' a base b, o, d or h and digits are expected, such as in 4'b0101",
-        start,
-        this.at,
-      );
+      const later = laterQuote(String.fromCharCode(letter ?? 0));
+      const plain = "after ' a base b, o, d or h and digits are expected, such as in 4'b0101";
+      this.#problem(later ?? plain, start, this.at);
       this.kind = Token.Nothing;
       return;
     }

@@ -12,7 +12,7 @@ import { executeFor, executeRepeat, executeWhile } from './loops.js';
 import { isSystemName, refuse } from './names.js';
 import { isPowerUp, leaveForLater, putOffAssign } from './powerUp.js';
 import { type Placed, pathText } from './report.js';
-import { executeSystemTask } from './systemTasks.js';
+import { executeSystemTask, leaveOut, onlyShows } from './systemTasks.js';
 
 /** Executes a statement symbolically on the context's store (clause 9). */
 export function executeStatement(statement: Statement, context: Context): Exits | undefined {
@@ -40,8 +40,12 @@ function executeKind(statement: Statement, context: Context): Exits | undefined 
       refuseStatement(statement, context);
       return undefined;
     case 'if':
-      return executeIf(statement, context);
     case 'case':
+      if (onlyShows(statement, context)) {
+        leaveOut(statement, context);
+        return undefined;
+      }
+      if (statement.kind === 'if') return executeIf(statement, context);
       return executeCase(statement, context);
     case 'for':
       return executeFor(statement, context, executeAssign);
