@@ -5,7 +5,7 @@ import { NO_NET } from './ids.js';
 import { X } from './values.js';
 
 // Inputs are looked at until so many fan-in nets have been, for each one of the circuit.
-const EFFORT = 12;
+const EFFORT = 4;
 const LEAST_EFFORT = 1_000_000;
 
 /** Inputs beside which a second one is tried. */

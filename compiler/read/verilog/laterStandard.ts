@@ -66,7 +66,8 @@ export function laterSignHint(
   if (kind === Token.Star && last.endsWith('.')) {
     return hint("'.*'", 'connect each port by .port(net)');
   }
-  if (expected.startsWith("'(' and the connection of the port")) {
+  const isNext = kind === Token.Comma || kind === Token.RightParen;
+  if (isNext && expected.startsWith("'(' and the connection of the port")) {
     return hint('a port without (…)', 'connect it by .port(net)');
   }
   if (next.startsWith('++') || next.startsWith('--')) {

@@ -129,7 +129,12 @@ describe('faults', () => {
     ['inv u1 (.a(b, c));', "1:23 ',' expected ')', found ','"],
     ['inv u1 (a) u2 (b);', "1:22 'u2' expected ';', found 'u2'"],
     ['inv u1 (a[1);', "1:22 ')' expected ']', found ')'"],
-    ['inv u1 [3] (a);', "1:20 ']' expected ':' between the ends of the range, found ']'"],
+    [
+      'inv u1 [3] (a);',
+      "1:20 ']' expected ':' between the ends of the range, found ']'; a size alone in brackets is a " +
+        'form of SystemVerilog, but IEEE 1364-2005 Verilog is read here: write both ends, such as ' +
+        '[0:3] for [4]',
+    ],
     ['inv #(.1(8)) u1 (a);', "1:18 '1' expected the name of a parameter after '.', found a number"],
     ['inv #(.W 8) u1 (a);', "1:20 '8' expected '(', found a number"],
     ['inv #+ u1 (a);', "1:16 '+' expected a number, a name or '(' after '#', found '+'"],

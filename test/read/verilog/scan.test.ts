@@ -136,7 +136,7 @@ describe('faults', () => {
     ['a é€ b', "syntax-error 1:3 'é€' 'é€' has no meaning here; remove it"],
     ['a $ b', "syntax-error 1:3 '$' '$' has no meaning here; remove it"],
     [
-      "a '{b}",
+      "a '<b",
       "syntax-error 1:3 ''' after ' a base b, o, d or h and digits are expected, such as in 4'b0101",
     ],
     [
