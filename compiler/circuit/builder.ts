@@ -1,7 +1,7 @@
 import type { Source, Span } from '../diagnostics/source.js';
 import { BusParts, joinedType, NetType } from './busParts.js';
 import type { BusCheck, Circuit, Port } from './circuit.js';
-import { Edge } from './circuit.js';
+import { Edge, type ValueNames } from './circuit.js';
 import { GateKind, gateInfo } from './gates.js';
 import { GrowableUint8, GrowableUint32 } from './growable.js';
 import {
@@ -54,6 +54,7 @@ export class CircuitBuilder {
   readonly #sources: Source[] = [];
   readonly #checks: Omit<BusCheck, 'name'>[] = [];
   readonly #netTypes = new Map<NetId, NetType>();
+  readonly #valueNames: ValueNames[] = [];
   /** What drives nets part of the time or weakly; `resolveBuses` makes gates of it. */
   readonly busParts = new BusParts();
   #sourceIndex = 0;
@@ -180,6 +181,11 @@ export class CircuitBuilder {
   /** Adds the table of a cell whose gate, register or latch drives `output`. */
   table(output: NetId, inputs: readonly NetId[], table: CellTable): void {
     this.#tables.add(output, inputs, table);
+  }
+
+  /** Names values of a signal. */
+  nameValues(named: ValueNames): void {
+    this.#valueNames.push(named);
   }
 
   /** Adds a memory without ports; returns its number. */
@@ -323,6 +329,7 @@ export class CircuitBuilder {
       memories: this.#memories.take(),
       tables: this.#tables.take(),
       hierarchy,
+      ...(this.#valueNames.length > 0 && { valueNames: this.#valueNames }),
       checks: this.#namedChecks(hierarchy, netCount),
       sources: this.#sources,
       originSource: new Uint16Array(this.#originSource.take()),

@@ -58,6 +58,13 @@ export interface Latches {
   readonly initial: Uint8Array;
 }
 
+/** What the text calls values of a signal by names of constants: the states of a machine, mostly. */
+export interface ValueNames {
+  /** The signal's nets, least significant first. */
+  readonly nets: Uint32Array;
+  readonly names: ReadonlyMap<number, string>;
+}
+
 /**
  * A net that is 1 while a bus has no value of its own: several drivers give it different values
  * (`conflict`), or none drives it though it is read and nothing pulls it or keeps its value
@@ -99,6 +106,8 @@ export interface Circuit {
   /** Cells that are told by a table, exactly, where two or three values need it. */
   readonly tables: Tables;
   readonly hierarchy: Hierarchy;
+  /** Absent where values of no signal have names. */
+  readonly valueNames?: readonly ValueNames[];
   /** One or two for each bus whose drivers can disagree or be off; empty without buses. */
   readonly checks: readonly BusCheck[];
   readonly sources: readonly Source[];

@@ -51,8 +51,9 @@ class StatesOutlet implements Outlet {
   ) {
     this.#circuit = design.circuit.name;
     let offset = 0;
-    this.#courses = vectors.map(({ name, nets }, i) => {
-      const course = new StateCourse(name, offset, nets.length, watched);
+    this.#courses = vectors.map((vector, i) => {
+      const { nets } = vector;
+      const course = new StateCourse(vector, offset, watched);
       offset += nets.length;
       const before = (saved as readonly SavedStates[] | undefined)?.[i];
       if (before !== undefined) course.restore(before);

@@ -2,6 +2,7 @@ import { readBits } from '../../runtime/rowBits.js';
 import { formatValue } from '../../runtime/valueText.js';
 import type { OutletBlock, WatchedPlace } from '../run/outlets/outlet.js';
 import type { StatesSummary } from '../run/outlets/statesSummary.js';
+import type { StateVector } from './stateVectors.js';
 
 /** Most different states and transitions that are told apart. */
 export const MOST_STATES = 4096;
@@ -27,6 +28,7 @@ export interface SavedStates {
 /** Follows the states of some bits of watched rows. */
 export class StateCourse {
   readonly #name: string;
+  readonly #names: StateVector['names'];
   readonly #offset: number;
   readonly #width: number;
   readonly #place: WatchedPlace;
@@ -53,9 +55,11 @@ export class StateCourse {
   /** These words in the row before, and behind them those that tell x. */
   readonly #before: Uint32Array;
 
-  /** Of `width` bits from bit `offset` on. */
-  constructor(name: string, offset: number, width: number, place: WatchedPlace) {
+  /** Of the bits from bit `offset` on. */
+  constructor({ name, nets, names }: StateVector, offset: number, place: WatchedPlace) {
+    const { length: width } = nets;
     this.#name = name;
+    this.#names = names;
     this.#offset = offset;
     this.#width = width;
     this.#place = place;
@@ -174,7 +178,8 @@ export class StateCourse {
     if (state === MOST_STATES || this.#from.length === MOST_TRANSITIONS) return -1;
     this.#numbers.set(key, state);
     this.#keys.push(key);
-    this.#values.push(this.#text(rows, at));
+    const name = typeof key === 'number' ? this.#names?.get(key) : undefined;
+    this.#values.push(name ?? this.#text(rows, at));
     this.#cycles.push(0);
     this.#first.push(cycle);
     return state;

@@ -11,6 +11,8 @@ export interface StateVector {
   readonly name: string;
   /** Least significant first. */
   readonly nets: Uint32Array;
+  /** What the text calls its values; absent where it has no names for them. */
+  readonly names?: ReadonlyMap<number, string>;
 }
 
 /**
@@ -38,10 +40,18 @@ export function stateVectors(circuit: Circuit, texts: readonly string[]): StateV
 
 function eachOf(circuit: Circuit, pattern: string): StateVector[] {
   const list = signalsOf(circuit, [pattern]);
-  return Array.from({ length: list.count }, (_, entry) => ({
-    name: signalName(circuit.hierarchy, list, entry),
-    nets: netsOf(list, entry),
-  }));
+  return Array.from({ length: list.count }, (_, entry) => {
+    const nets = netsOf(list, entry);
+    const names = namesOf(circuit, nets);
+    return { name: signalName(circuit.hierarchy, list, entry), nets, ...(names && { names }) };
+  });
+}
+
+/** The names of the values of certain nets: those of any signal that is just these. */
+function namesOf({ valueNames = [] }: Circuit, nets: Uint32Array): StateVector['names'] {
+  const isSame = (other: Uint32Array): boolean =>
+    other.length === nets.length && other.every((net, bit) => net === nets[bit]);
+  return valueNames.find((named) => isSame(named.nets))?.names;
 }
 
 const netsOf = ({ nets, place, width }: SignalList, entry: number): Uint32Array =>

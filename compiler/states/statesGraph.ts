@@ -21,7 +21,7 @@ function cluster({ register, states, transitions }: StatesSummary, prefix: strin
   const numbers = new Map(states.map(({ value }, number) => [value, `${prefix}s${number}`]));
   const nodes = states.map(({ value, cycles }, number) => {
     const first = number === 0 ? ' peripheries=2 class="state first"' : '';
-    const label = `${value}\\n${counted(cycles, 'cycle')}`;
+    const label = `${escaped(value)}\\n${counted(cycles, 'cycle')}`;
     return `    ${numbers.get(value)} [label="${label}"${first}];`;
   });
   const edges = transitions.map(({ from, to, count }) => {
@@ -37,4 +37,6 @@ function cluster({ register, states, transitions }: StatesSummary, prefix: strin
   ].join('\n');
 }
 
-const text = (content: string): string => `"${content.replace(/["\\]/g, '\\$&')}"`;
+const escaped = (content: string): string => content.replace(/["\\]/g, '\\$&');
+
+const text = (content: string): string => `"${escaped(content)}"`;

@@ -74,6 +74,32 @@ const pump = designFrom(
   ),
 );
 
+/** The same with names for the phases, in an instance; LOCKED is beside another name of one code. */
+const namedPump = designFrom(
+  new Source(
+    'pump.v',
+    `module named (input clk, wanted, fault, output on, near);
+      parameter LOW = 2;
+      localparam [1:0] OFF = 0, START = 1, RUN = 2'd2;
+      localparam LOCKED = 3, BROKEN = 3;
+      reg [1:0] phase = OFF;
+      always @(posedge clk)
+        case (phase)
+          OFF: if (wanted) phase <= START;
+          START: phase <= RUN;
+          default: phase <= fault || phase == BROKEN ? LOCKED : wanted ? RUN : OFF;
+        endcase
+      assign on = phase == RUN;
+      reg [2:0] count = 0;
+      always @(posedge clk) if (count == LOW) count <= 0; else count <= count + 1;
+      assign near = count[0];
+    endmodule
+    module pump (input clk, wanted, fault, output on, near);
+      named p (clk, wanted, fault, on, near);
+    endmodule`,
+  ),
+);
+
 // Bit 0 is `wanted`, bit 1 `fault`. Cycle by cycle, from phase 0 on, by hand:
 // wanted 0 1 1 1 0 0 1 1 1 1 1 1
 // fault  0 0 0 0 0 0 0 0 0 1 0 0
@@ -103,6 +129,23 @@ describe('the states of a small machine', () => {
     const { states, notes } = await followed(pump, ['phase'], course, 12, { engine });
     expect(states).toEqual([byHand]);
     expect(notes).toEqual([]);
+  });
+
+  it('are told by the names that the text has for their codes, where these have one', async () => {
+    const names: Record<string, string> = { '0x0': 'OFF', '0x1': 'START', '0x2': 'RUN' };
+    const named = (value: string): string => names[value] ?? value;
+    const { states } = await followed(namedPump, ['p.phase', 'p.count'], course, 12);
+    expect(states![0]).toEqual({
+      register: 'p.phase',
+      states: byHand.states.map((state) => ({ ...state, value: named(state.value) })),
+      transitions: byHand.transitions.map((each) => ({
+        ...{ ...each, from: named(each.from), to: named(each.to) },
+      })),
+    });
+    // A limit alone names no states.
+    expect(states![1]!.states.map(({ value }) => value)).toEqual(['0x0', '0x1', '0x2']);
+    expect(readFileSync(join(folder, 's.csv'), 'utf8')).toContain('\np.phase,OFF,START,2,2\n');
+    expect(statesGraph('pump', states!)).toContain('[label="RUN\\n4 cycles"]');
   });
 
   it('are written as a table and told in the summary', async () => {
@@ -217,7 +260,7 @@ describe('states', () => {
     }
     rows.push(0, 256);
     const place = { firstWord: 0, flagWord: 0, flagBit: 0, stride: 1, toUnknown: undefined };
-    const stateCourse = new StateCourse('n', 0, 9, place);
+    const stateCourse = new StateCourse({ name: 'n', nets: new Uint32Array(9) }, 0, place);
     const watched = Uint32Array.from(rows);
     const none = { rows: watched, stimulus: watched, stimulusStride: 0 };
     stateCourse.take({ firstCycle: 0, cycles: rows.length, watched, ...none });

@@ -12,8 +12,9 @@ export interface StatesSummary {
   readonly followedTo?: number;
 }
 
-/** A state by its value, as a response table has it. */
+/** A state. */
 export interface StateSummary {
+  /** As a response table has it, or the name of the constant that the text has for it. */
   readonly value: string;
   /** Cycles in which it was sampled, and the first of them. */
   readonly cycles: number;

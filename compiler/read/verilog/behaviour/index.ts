@@ -12,7 +12,7 @@ import { constantIn } from './widths.js';
 
 export { lowerAlways } from './always.js';
 export { lowerInitial } from './initial.js';
-export { isBare } from './walk.js';
+export { isBare, walk } from './walk.js';
 
 /**
  * The value of a constant expression (IEEE 1364-2005, clause 5), in its own width and sign.

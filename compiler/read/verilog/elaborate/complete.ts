@@ -17,6 +17,7 @@ import { pruneUnused } from './pruning.js';
 import { Drive, type Repeat, type Template } from './template.js';
 import { reportUndriven } from './undriven.js';
 import { type Usage, usageOf, usesOf } from './usage.js';
+import { valueNamesOf } from './valueNames.js';
 
 /** Turns what was recorded of a module into a template: every net has one driver at most. */
 export function complete(body: ModuleBody, boundary: Boundary): Template {
@@ -39,6 +40,7 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
   }));
   // What drives an own variable has taken its value along.
   const farInitials = [...body.initialValues].filter(([net]) => !builder.isDriven(net));
+  const valueNames = valueNamesOf(body);
   const template: Template = {
     name: body.text(module.name),
     isCell: module.isCell,
@@ -55,6 +57,7 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
     blocks: blockNamesOf(body, find),
     scope: body.root,
     netTypes: netTypesOf(classes, find),
+    ...(valueNames.length > 0 && { valueNames }),
     ...(defaults.size > 0 && { defaults }),
     ...(farInitials.length > 0 && { farInitials }),
     ...(body.dependsOnPlace && { outerNets, outerMemories }),

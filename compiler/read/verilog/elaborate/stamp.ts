@@ -165,6 +165,10 @@ export class Stamper {
       const own = nets[net]!;
       if (!this.#farInitials.has(own)) this.#farInitials.set(own, value);
     }
+    for (const { nets: own, names } of template.valueNames ?? []) {
+      const moved = Uint32Array.from(own, (net) => nets[net]!);
+      if (!moved.includes(NO_NET)) this.#builder.nameValues({ nets: moved, names });
+    }
     for (const [net, type] of template.netTypes ?? []) {
       this.#builder.setNetType(netId(nets[net]!), type);
     }

@@ -37,6 +37,12 @@ export interface Repeat {
   readonly second: number;
 }
 
+/** The names of values of a signal, whose nets come with the least significant one first. */
+export interface SignalValues {
+  readonly nets: readonly NetId[];
+  readonly names: ReadonlyMap<number, string>;
+}
+
 /** The names of a module or of a block inside it, with the module's nets behind them. */
 export interface BlockNames {
   /** Name of the block; unused for the module itself, which comes first. */
@@ -91,6 +97,8 @@ export interface Template {
   readonly scope: BlockScope | undefined;
   /** The nets whose type says more than `wire`; absent where there is none. */
   readonly netTypes?: readonly (readonly [net: number, type: NetType])[];
+  /** Names of values of signals; absent where there is none. */
+  readonly valueNames?: readonly SignalValues[];
   /** Drivers that give variables which nothing assigns their value at power-up. */
   readonly defaults?: ReadonlySet<number>;
   /** Values at power-up of variables of other modules; absent where there is none. */
