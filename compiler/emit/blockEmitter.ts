@@ -10,6 +10,7 @@ import {
   ProgramOp,
 } from '../program/program.js';
 import type { AreaLayout } from './areaLayout.js';
+import type { ConstantPool } from './constantPool.js';
 import { fence, STRETCH } from './fence.js';
 import { type BitWindow, BlockWords } from './memory/blockWords.js';
 import { numberCode } from './memory/numberCode.js';
@@ -35,6 +36,7 @@ export interface Emission {
   readonly area: AreaLayout;
   readonly sinks: Sinks;
   readonly memories: MemoryPlaces;
+  readonly pool: ConstantPool;
   /** Whether operations are kept in order by fences. */
   readonly fences: boolean;
   /** Where state bits stand in locals while cycles run; in the areas unless given. */

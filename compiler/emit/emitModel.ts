@@ -12,6 +12,7 @@ import type { PassSwitches } from '../program/switches.js';
 import { type AreaLayout, FIRST_AREA, layArea } from './areaLayout.js';
 import { BlockEmitter, type Emission, type Pointers } from './blockEmitter.js';
 import { compareState } from './compareState.js';
+import { ConstantPool } from './constantPool.js';
 import { LEAVE, STRETCH } from './fence.js';
 import { addQuietLoop, canBeQuiet, stateMask, WROTE } from './guards/quietLoop.js';
 import { addHeldLoop, canHold } from './heldLoop.js';
@@ -69,20 +70,13 @@ export function emitModel(
     const maskAt = patternAt + Math.ceil(pattern.length / 64) * 64;
     const contents = maskAt + Math.ceil(mask.length / 64) * 64;
     const memories = layMemories(shapes, layout.threeValued, contents);
-    const buffers = Math.ceil(memories.end / 64) * 64;
-    const segments = [
-      { at: patternAt, data: pattern },
-      ...(mask.length > 0 ? [{ at: maskAt, data: mask }] : []),
-      ...segmentsOf(memoryImage(memories)).map(({ at, data }) => ({ at: contents + at, data })),
-    ].map(({ at, data }, i) => ({ name: `data${i}`, offset: module.i32.const(at), data }));
-    const pages = Math.ceil(buffers / 65536);
-    module.setMemory(pages, 65536, 'memory', segments, false, false, '0');
+    const pool = new ConstantPool(Math.ceil(memories.end / 64) * 64);
     addGlobals(module, wasm.i32, areas[0]);
     const writes = isGuarded && programs[0]!.writes.length > 0;
     if (writes) module.addGlobal(WROTE, wasm.i32, true, module.i32.const(0));
     const cycles = programs.map((program, index) =>
       cycleCode(wasm, module, program, {
-        ...{ area: layouts[index]!, memories, index, passes },
+        ...{ area: layouts[index]!, memories, pool, index, passes },
         ...(writes && { wrote: WROTE }),
       }),
     );
@@ -93,7 +87,9 @@ export function emitModel(
     const { fences = true, holdStates = true } = passes;
     const ahead =
       holdStates && !comparesState && canHold(cyclePrograms)
-        ? addHeldLoop(wasm, module, programs[0]!, { area: layouts[0]!, memories, fences, areaSum })
+        ? addHeldLoop(wasm, module, programs[0]!, {
+            ...{ area: layouts[0]!, memories, pool, fences, areaSum },
+          })
         : undefined;
     const place = {
       ...(ahead && { ahead }),
@@ -117,6 +113,15 @@ export function emitModel(
     } else module.addFunctionExport(name, name);
     if (passes.tables !== false && canHaveTable(cyclePrograms, layout))
       addTableLoop(wasm, module, layout);
+    const segments = [
+      { at: patternAt, data: pattern },
+      ...(mask.length > 0 ? [{ at: maskAt, data: mask }] : []),
+      ...segmentsOf(memoryImage(memories)).map(({ at, data }) => ({ at: contents + at, data })),
+      ...(pool.data.data.length > 0 ? [pool.data] : []),
+    ].map(({ at, data }, i) => ({ name: `data${i}`, offset: module.i32.const(at), data }));
+    const buffers = Math.ceil(pool.end / 64) * 64;
+    const pages = Math.ceil(buffers / 65536);
+    module.setMemory(pages, 65536, 'memory', segments, false, false, '0');
     return {
       bytes: Uint8Array.from(module.emitBinary()),
       layout,
@@ -145,6 +150,7 @@ function addGlobals(module: binaryen.Module, i32: binaryen.Type, firstArea: numb
 interface CyclePlaces {
   readonly area: AreaLayout;
   readonly memories: MemoryPlaces;
+  readonly pool: ConstantPool;
   readonly index: number;
   readonly passes: PassSwitches;
   /** Global that each write to a memory sets to 1. */
@@ -175,7 +181,7 @@ function plainCode(
   wasm: typeof binaryen,
   module: binaryen.Module,
   program: Program,
-  { area, memories, index, passes }: CyclePlaces,
+  { area, memories, pool, index, passes }: CyclePlaces,
 ): CycleCode {
   const { i32 } = wasm;
   const { fences = true } = passes;
@@ -185,7 +191,9 @@ function plainCode(
   const { length } = program.outputs;
   const packsValues = isSmall && length <= SCALAR_OUTPUTS && program.op.length <= STRETCH;
   const sinks = storesOf(program, area, packsValues ? [] : outputsInMemory(groups));
-  const emission: Emission = { module, i32, program, area, sinks, memories, fences };
+  const emission: Emission = {
+    ...{ module, i32, program, area, sinks, memories, pool, fences },
+  };
   const { statements, localCount } = isSmall
     ? inlineCycle(emission, packsValues)
     : callCycle(emission, `cycle${index}`, wasm.createType([i32, i32, i32]), wasm.none);
@@ -200,13 +208,15 @@ function packedCode(
   wasm: typeof binaryen,
   module: binaryen.Module,
   program: Program,
-  { area, memories, index, passes }: CyclePlaces,
+  { area, memories, pool, index, passes }: CyclePlaces,
 ): CycleCode {
   const groups = outputGroups(program, passes.aliasOutputs);
   const sinks = storesOf(program, area, outputsInMemory(groups));
   const { i32 } = wasm;
   const { fences = true } = passes;
-  const emission: Emission = { module, i32, program, area, sinks, memories, fences };
+  const emission: Emission = {
+    ...{ module, i32, program, area, sinks, memories, pool, fences },
+  };
   const homes = stepHomes(program.vectors!, vectorParts(program.vectors!).flat());
   const statements = packedCycle(wasm, emission, `cycle${index}`, homes);
   statements.push(...packFromMemory(emission, groups, runPointers, RunLocal.Response));

@@ -41,7 +41,7 @@ export function addHeldLoop(
   wasm: typeof binaryen,
   module: binaryen.Module,
   program: Program,
-  place: Pick<Emission, 'area' | 'memories' | 'fences'> & { readonly areaSum: number },
+  place: Pick<Emission, 'area' | 'memories' | 'pool' | 'fences'> & { readonly areaSum: number },
 ): CallAhead {
   const { i32, local, global } = module;
   const type = wasm.i32;

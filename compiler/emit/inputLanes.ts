@@ -1,5 +1,7 @@
 import type binaryen from 'binaryen';
+import type { ConstantPool } from './constantPool.js';
 import { LANES } from './lanes.js';
+import { shuffled } from './shuffled.js';
 
 /** Bit `places[i]` of byte i in bit 0 of lane i; -1 where it does not matter. */
 export function pickBits(
@@ -20,10 +22,11 @@ export function pickBits(
  */
 export function rowBytes(
   module: binaryen.Module,
+  pool: ConstantPool,
   wanted: readonly number[],
   row: () => binaryen.ExpressionRef,
 ): binaryen.ExpressionRef {
-  const { v128, i8x16 } = module;
+  const { v128 } = module;
   const window = (byte: number): binaryen.ExpressionRef => v128.load(byte, 1, row(), '0');
   const taken = new Array<boolean>(LANES).fill(false);
   let joined: binaryen.ExpressionRef | undefined;
@@ -33,14 +36,18 @@ export function rowBytes(
     const start = Math.min(...open);
     const isHere = (lane: number): boolean =>
       wanted[lane]! >= start && wanted[lane]! < start + LANES && !taken[lane];
-    const lanes = wanted.map((byte, lane) =>
-      isHere(lane) ? (joined === undefined ? 0 : LANES) + byte - start : lane,
-    );
-    const isInPlace = joined === undefined && lanes.every((from, lane) => from === lane);
+    const before = joined;
+    const lanes = wanted.map((byte, lane) => {
+      if (isHere(lane)) return (before === undefined ? 0 : LANES) + byte - start;
+      return before === undefined || !taken[lane] ? -1 : lane;
+    });
+    const isInPlace = before === undefined && lanes.every((from, to) => from < 0 || from === to);
     for (let lane = 0; lane < LANES; lane++) if (isHere(lane)) taken[lane] = true;
     joined = isInPlace
       ? window(start)
-      : i8x16.shuffle(joined ?? window(start), window(start), lanes);
+      : before === undefined
+        ? shuffled(module, pool, lanes, window(start))
+        : shuffled(module, pool, lanes, before, window(start));
   }
   if (joined === undefined) throw new Error('a vector without bytes of the row');
   return joined;

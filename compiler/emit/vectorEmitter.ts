@@ -11,6 +11,7 @@ import type { Emission, Pointers } from './blockEmitter.js';
 import { pickBits, rowBytes } from './inputLanes.js';
 import { LANES } from './lanes.js';
 import { storeHalf } from './packOutputs.js';
+import { shuffled } from './shuffled.js';
 import type { StepHomes, VectorPart } from './vectorParts.js';
 
 /** Words of 32 bits in a vector. */
@@ -72,7 +73,9 @@ export class VectorEmitter {
     };
     for (let step = start; step < end; step++) {
       const { op, a, b, c } = steps[step]!;
-      for (const operand of [a, b, c].slice(0, stepOperands[op])) count(operand);
+      // A shuffle of one vector names it twice, but takes it once.
+      const operands = op === VectorOp.Shuffle && a === b ? [a] : [a, b, c];
+      for (const operand of operands.slice(0, stepOperands[op])) count(operand);
       // A multiplexer's expression reads its 0-operand twice, a doubling what it doubles.
       if (op === VectorOp.Mux) count(b);
       if (op === VectorOp.Stack) count(a);
@@ -137,13 +140,13 @@ export class VectorEmitter {
   }
 
   #expression(step: number): { code: binaryen.ExpressionRef; depth: number } {
-    const { module } = this.#emission;
-    const { v128, i8x16 } = module;
+    const { module, pool } = this.#emission;
+    const { v128 } = module;
     const { op, a, b, c, lanes } = this.#code.steps[step]!;
     if (op === VectorOp.Splat) return { code: this.#splat(a), depth: 2 };
     if (op === VectorOp.RowBytes) {
       const row = () => this.#at(this.#pointers.row);
-      return { code: rowBytes(module, lanes, row), depth: 6 };
+      return { code: rowBytes(module, pool, lanes, row), depth: 6 };
     }
     if (op === VectorOp.Mux) return this.#mux(a, b, c);
     if (op === VectorOp.Stack) return this.#stack(a, b);
@@ -159,14 +162,13 @@ export class VectorEmitter {
       return { code: pickBits(module, left.code, lanes), depth: left.depth + 2 };
     }
     if (op === VectorOp.Shuffle && a === b) {
-      const held = this.#again(left, a);
-      return { code: i8x16.shuffle(held.first, held.second, laneBytes(lanes)), depth: 1 };
+      return { code: shuffled(module, pool, lanes, left.code), depth: left.depth + 1 };
     }
     const right = this.#value(b);
     const depth = Math.max(left.depth, right.depth) + 1;
     const code =
       op === VectorOp.Shuffle
-        ? i8x16.shuffle(left.code, right.code, laneBytes(lanes))
+        ? shuffled(module, pool, lanes, left.code, right.code)
         : op === VectorOp.And
           ? v128.and(left.code, right.code)
           : op === VectorOp.AndNot
@@ -175,17 +177,6 @@ export class VectorEmitter {
               ? v128.or(left.code, right.code)
               : v128.xor(left.code, right.code);
     return { code, depth };
-  }
-
-  // A shuffle of one vector names it twice.
-  #again(
-    { code }: { code: binaryen.ExpressionRef },
-    step: number,
-  ): { first: binaryen.ExpressionRef; second: binaryen.ExpressionRef } {
-    const { local } = this.#emission.module;
-    const held = this.#locals.get(step) ?? this.#setLocal(step, code);
-    const get = () => local.get(held, this.#types.v128);
-    return { first: get(), second: get() };
   }
 
   // zero ^ (select & (one ^ zero))
@@ -287,7 +278,3 @@ export function constant(
 ): binaryen.ExpressionRef {
   return module.v128.const(bytes as number[]);
 }
-
-// A lane that does not matter stays where it is.
-const laneBytes = (lanes: readonly number[]): number[] =>
-  lanes.map((lane, to) => (lane < 0 ? to : lane));
