@@ -162,6 +162,23 @@ describe('a memory that another module writes as only registers can be written',
     expect([circuit!.memories.length, circuit!.latches.count]).toEqual([0, 16]);
   });
 
+  it('is refused where its own module writes it, too', () => {
+    const text = resetting(32).replace('assign q', 'always @(posedge clk) m[a] <= d; assign q');
+    const { found, messages } = reading(text);
+    expect(found).toContain('not-supported top.v 7:25');
+    expect(messages.join()).toContain(
+      'its own module writes it too, and registers have one process',
+    );
+  });
+
+  it('is named where it is an array of registers with two drivers', () => {
+    const text = resetting(4).replace('assign q', 'always @(posedge clk) m[a] <= d; assign q');
+    const { messages } = reading(text.replaceAll('[15:0] a', '[1:0] a'));
+    expect(messages.filter((message) => message.includes('drivers'))).toEqual([
+      'top.v:6:7: error: u.v.m has 2 drivers; leave one of them [net-multiply-driven]',
+    ]);
+  });
+
   it('is refused where it is too large for these', () => {
     expect(reading(resetting(8192)).found).toContain('not-supported top.v 7:25');
   });

@@ -82,6 +82,8 @@ export interface HeldMemory {
   readonly position: Position;
   /** Set where it is the memory of another module. */
   readonly isFar?: true;
+  /** Whether that module, or one between, writes it at clock edges. */
+  readonly isWritten?: boolean;
 }
 
 /**

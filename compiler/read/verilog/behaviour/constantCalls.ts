@@ -56,15 +56,17 @@ function isPure(call: CallExpression, context: Context): boolean {
   if (isSystemName(call.path, context)) return true;
   const binding = resolveCalled(context.scope, call.path);
   if (binding?.kind !== 'routine' || binding.syntax.kind !== 'function') return false;
-  return isPureFunction(binding.syntax, binding.scope, new Set(), context);
+  return isPureFunction(binding.syntax, binding.scope);
 }
 
-// Functions that call each other count as pure unless something else speaks against it.
-function isPureFunction(
+/**
+ * Whether a function names nothing but parameters and its own variables. Functions that call each
+ * other do so unless something else speaks against it.
+ */
+export function isPureFunction(
   routine: RoutineItem,
   scope: Scope,
-  open: Set<RoutineItem>,
-  context: Context,
+  open = new Set<RoutineItem>(),
 ): boolean {
   if (open.has(routine)) return true;
   open.add(routine);
@@ -83,9 +85,9 @@ function isPureFunction(
     if (node.kind === 'callTask') answer = false;
     if (node.kind === 'call') {
       const { path } = node as CallExpression;
-      const called = isSystemName(path, context) ? undefined : resolveCalled(scope, path);
+      const called = isSystemName(path, { scope }) ? undefined : resolveCalled(scope, path);
       if (called?.kind === 'routine') {
-        answer &&= isPureFunction(called.syntax, called.scope, open, context);
+        answer &&= isPureFunction(called.syntax, called.scope, open);
       }
     }
     return answer;

@@ -131,8 +131,10 @@ function wordOfAddress({ indices }: HeldMemory, address: Bits, logic: Logic): nu
 export function refuseHeld({ memory, place }: WordWrite, what: string, context: Context): void {
   const { shared } = context.scope;
   shared.needRegisters?.(memory);
-  const message =
-    `this memory ${what}, which takes registers, and it is larger than the ${REGISTER_LIMIT} bits ` +
-    'that these can hold';
+  const why =
+    memory.isWritten === true
+      ? 'its own module writes it too, and registers have one process alone that writes them'
+      : `it is larger than the ${REGISTER_LIMIT} bits that registers can hold`;
+  const message = `this memory ${what}; ${why}`;
   refuse(context, { start: place, end: place }, message);
 }

@@ -11,6 +11,7 @@ import { targetPieces } from './targets.js';
 import { constantIn } from './widths.js';
 
 export { lowerAlways } from './always.js';
+export { isPureFunction } from './constantCalls.js';
 export { lowerInitial } from './initial.js';
 export { isBare, walk } from './walk.js';
 

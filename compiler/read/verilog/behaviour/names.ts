@@ -50,13 +50,20 @@ function resolveWith(
 }
 
 /** Whether a path names a system task or function. */
-export function isSystemName(path: readonly NameId[], context: Context): boolean {
+export function isSystemName(path: readonly NameId[], context: Pick<Context, 'scope'>): boolean {
   return path.length === 1 && context.scope.shared.names.text(path[0]!).startsWith('$');
 }
 
 /** What a name means that is called as a function or task; a diagnostic where it means nothing. */
 export function calledBinding(named: Named, context: Context): Binding | undefined {
-  return found(resolveCalled(context.scope, named.path), named, context);
+  const binding = resolveCalled(context.scope, named.path);
+  if (binding !== undefined || named.path.length === 1) return found(binding, named, context);
+  const { shared } = context.scope;
+  const message =
+    `\`${pathText(shared, named.path)}\` is no function that can be called from here: one of another ` +
+    'module may name nothing but parameters and its own variables; give it its signals as arguments';
+  report(shared, 'name-undeclared', named, message);
+  return undefined;
 }
 
 function found(binding: Binding | undefined, named: Named, context: Context): Binding | undefined {

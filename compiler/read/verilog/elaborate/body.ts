@@ -183,6 +183,8 @@ export class ModuleBody implements OuterHost {
   }
 
   needRegisters(memory: HeldMemory): void {
+    // Registers have one driver, and the other module is it.
+    if (memory.isWritten === true) return;
     const { width, indices } = this.builder.memories[memory.number]!;
     if (depthOf(indices) * width <= REGISTER_LIMIT) throw new NeedsRegisters(memory);
   }

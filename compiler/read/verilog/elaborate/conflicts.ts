@@ -1,4 +1,4 @@
-import { NO_NET, netId } from '../../../circuit/ids.js';
+import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
 import type { Span } from '../../../diagnostics/source.js';
 import { bitList } from './blockNames.js';
 import type { BlockScope } from './blockScope.js';
@@ -79,7 +79,38 @@ function reportConflicts(body: ModuleBody, conflicts: Map<number, Origin[]>): vo
       }
     }
   }
-  for (const drivers of conflicts.values()) report(body, 'a net without a name', drivers);
+  // What is left are nets of other modules.
+  const said = new Set<string>();
+  for (const [net, drivers] of conflicts) {
+    const far = farName(body, netId(net));
+    if (far !== undefined && said.has(far)) continue;
+    if (far !== undefined) said.add(far);
+    report(body, far ?? 'a net without a name', drivers);
+  }
+}
+
+/** The path of a signal of an instance that a net stands for, without indices. */
+function farName({ children, design }: ModuleBody, net: NetId): string | undefined {
+  let at = children.reached(net);
+  let within = children;
+  const path: string[] = [];
+  while (at !== undefined) {
+    const { child, childNet } = at;
+    const template = design.templates[within.template(child)]!;
+    path.push(design.text(within.name(child)));
+    for (const { nets, names } of template.blocks) {
+      const place = nets.indexOf(childNet);
+      if (place < 0) continue;
+      for (const { name, offset, width } of names.signals) {
+        if (place >= offset && place < offset + width) {
+          return [...path, name.replace(/\[.*$/, '')].join('.');
+        }
+      }
+    }
+    within = template.children;
+    at = within.reached(childNet);
+  }
+  return undefined;
 }
 
 function reportVector(

@@ -1,4 +1,5 @@
 import type { NetId } from '../../../circuit/ids.js';
+import { isPureFunction } from '../behaviour/index.js';
 import type { Binding, HeldMemory } from '../scope.js';
 
 /** How nets and memories of one module are told in another. */
@@ -7,7 +8,10 @@ export interface ModuleMap {
   memory(memory: HeldMemory): HeldMemory;
 }
 
-/** A binding told in another module; undefined for a routine, which reads nets of its own module. */
+/**
+ * A binding told in another module; undefined for a task, and for a function that names nets of its
+ * own module.
+ */
 export function mapBinding(binding: Binding, map: ModuleMap): Binding | undefined {
   const { net } = map;
   switch (binding.kind) {
@@ -19,6 +23,6 @@ export function mapBinding(binding: Binding, map: ModuleMap): Binding | undefine
     case 'parameter':
       return binding;
     case 'routine':
-      return undefined;
+      return isPureFunction(binding.syntax, binding.scope) ? binding : undefined;
   }
 }

@@ -61,6 +61,8 @@ export interface RecordedMemory {
   /** Ports by which it is read, each with the driver of the lowest bit; the others follow. */
   readonly reads: { readonly address: readonly NetId[]; readonly firstDriver: number }[];
   readonly writes: WritePins[];
+  /** As in `HeldMemory`. */
+  readonly isWritten?: boolean;
 }
 
 // What a net and a driver take in the columns below.
@@ -229,8 +231,10 @@ export class Recording implements GateSink {
   farMemory(memory: RecordedMemory): HeldMemory {
     const { width, indices, position } = memory;
     const contents = new FarContents(width, depthOf(indices), memory.contents);
-    const number = this.memories.push({ ...memory, contents, reads: [], writes: [] }) - 1;
-    return { number, indices, contents, position, isFar: true };
+    const isWritten = memory.writes.length > 0 || memory.isWritten === true;
+    const own = { ...memory, contents, reads: [], writes: [], isWritten };
+    const number = this.memories.push(own) - 1;
+    return { number, indices, contents, position, isFar: true, isWritten };
   }
 
   readMemory(memory: number, address: readonly NetId[]): readonly NetId[] {

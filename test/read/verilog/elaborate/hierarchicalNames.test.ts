@@ -88,6 +88,16 @@ describe('names that lead up', () => {
 });
 
 describe('names that lead down', () => {
+  it('call a function that names nothing but parameters and its own variables', () => {
+    const text = (body: string) => `
+      module math (input [3:0] n); parameter P = 3;
+        function [3:0] add (input [3:0] v); reg [3:0] t; begin t = v + P; add = ${body}; end endfunction
+      endmodule
+      module t (input [3:0] a, output [3:0] y); math #(5) m (a); assign y = m.add(a); endmodule`;
+    expect(signalValue(circuitOf(text('t')), 'y', { a: 4 })).toBe(9);
+    expect(reading(text('t + n')).problems).toEqual(['name-undeclared m.add(a)@5']);
+  });
+
   it('drive a net of an instance that reads it', () => {
     const circuit = circuitOf(`
       module leaf (output y); wire n; not (y, n); endmodule
