@@ -14,6 +14,7 @@ import type { EmitOptions } from './emit/emitModel.js';
 import { type Emitter, localEmitter } from './emit/emitter.js';
 import { FALSE, type Logic } from './logic/logic.js';
 import { sinksOf } from './logic/sinks.js';
+import { type Addition, findAdditions } from './passes/additions/additions.js';
 import { buildPackedProgram } from './passes/buildPackedProgram.js';
 import { buildProgram } from './passes/buildProgram.js';
 import { choosePolarity } from './passes/choosePolarity.js';
@@ -148,7 +149,7 @@ export function packedPrograms(
   const whole = compacted(cycle!, passes);
   const { logic: kept, derived } = merged(whole, passes, start);
   const logic = swept(kept, passes);
-  const packed = passes.packWords === false ? undefined : packWords(logic);
+  const packed = passes.packWords === false ? undefined : packWords(logic, added(logic, passes));
   const program = packed
     ? packedProgram(packed, passes)
     : plainProgram(grouped(logic, passes), passes);
@@ -164,6 +165,9 @@ function swept(logic: Logic, passes: PassSwitches, keepsStates = false): Logic {
   const smaller = sweepNodes(logic, { recover });
   return smaller === logic ? logic : compacted(smaller, passes, keepsStates);
 }
+
+const added = (logic: Logic, passes: PassSwitches): readonly Addition[] =>
+  passes.addWords === false ? [] : findAdditions(logic);
 
 const grouped = (logic: Logic, passes: PassSwitches): Logic =>
   passes.groupRegisters === false ? logic : compacted(groupRegisters(logic), passes);

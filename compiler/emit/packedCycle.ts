@@ -58,13 +58,13 @@ class PackedCycle {
   #addBlock(number: number): void {
     const emitter = new BlockEmitter(this.#emission, number, PARAMETERS, PARAMETER_COUNT);
     emitter.emit();
-    this.#add(`block${number}`, emitter.statements, emitter.localCount - PARAMETER_COUNT, 0);
+    this.#add(`block${number}`, emitter.statements, this.#scalars(emitter));
   }
 
   #addPart(part: VectorPart, isLast: boolean): void {
     const { states, outputs, rows } = this.#emission.program.vectors!;
-    const { i32, v128 } = this.#wasm;
-    const types = { i32, v128 };
+    const { i32, i64, v128 } = this.#wasm;
+    const types = { i32, i64, v128 };
     const emitter = new VectorEmitter(
       this.#emission,
       types,
@@ -73,7 +73,7 @@ class PackedCycle {
       PARAMETER_COUNT,
     );
     emitter.emit(part, isLast ? { states, outputs, rows } : { states: [], outputs: [], rows: [] });
-    this.#add(`vectors${part.start}`, emitter.statements, 0, emitter.localCount);
+    this.#add(`vectors${part.start}`, emitter.statements, emitter.locals);
   }
 
   #addCopies(copies: readonly Copy[], name: string): void {
@@ -84,18 +84,18 @@ class PackedCycle {
       for (const [value, offset] of copies.slice(from, from + COPIES_IN_BLOCK)) {
         emitter.copy(value, offset);
       }
-      this.#add(`${name}${from}`, emitter.statements, emitter.localCount - PARAMETER_COUNT, 0);
+      this.#add(`${name}${from}`, emitter.statements, this.#scalars(emitter));
     }
   }
 
-  #add(name: string, body: binaryen.ExpressionRef[], scalars: number, vectors: number): void {
+  #scalars({ localCount }: BlockEmitter): binaryen.Type[] {
+    return new Array<binaryen.Type>(localCount - PARAMETER_COUNT).fill(this.#wasm.i32);
+  }
+
+  #add(name: string, body: binaryen.ExpressionRef[], locals: binaryen.Type[]): void {
     if (body.length === 0) return;
-    const { i32, v128, none, createType } = this.#wasm;
+    const { i32, none, createType } = this.#wasm;
     const { module } = this.#emission;
-    const locals = [
-      ...new Array<binaryen.Type>(scalars).fill(i32),
-      ...new Array<binaryen.Type>(vectors).fill(v128),
-    ];
     const whole = `${this.#cycle}_${name}`;
     module.addFunction(
       whole,

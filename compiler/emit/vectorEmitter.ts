@@ -1,6 +1,7 @@
 import type binaryen from 'binaryen';
 import { firstState } from '../program/program.js';
 import {
+  isNumber,
   type RowSink,
   stepOperands,
   type VectorCode,
@@ -10,6 +11,7 @@ import {
 import type { Emission, Pointers } from './blockEmitter.js';
 import { pickBits, rowBytes } from './inputLanes.js';
 import { LANES } from './lanes.js';
+import { numberCode, numericCode } from './numericCode.js';
 import { storeHalf } from './packOutputs.js';
 import { shuffled } from './shuffled.js';
 import type { StepHomes, VectorPart } from './vectorParts.js';
@@ -28,6 +30,7 @@ export interface VectorPointers extends Pointers {
 /** The types of the loaded library that vector code needs. */
 export interface VectorTypes {
   readonly i32: binaryen.Type;
+  readonly i64: binaryen.Type;
   readonly v128: binaryen.Type;
 }
 
@@ -38,8 +41,8 @@ export interface VectorTypes {
  */
 export class VectorEmitter {
   readonly statements: binaryen.ExpressionRef[] = [];
-  /** Locals of 128 bits in use, from `firstLocal` on. */
-  localCount = 0;
+  /** Types of the locals in use, from `firstLocal` on. */
+  readonly locals: binaryen.Type[] = [];
   readonly #emission: Emission;
   readonly #code: VectorCode;
   readonly #types: VectorTypes;
@@ -102,19 +105,23 @@ export class VectorEmitter {
   #emitStep(step: number): void {
     const { op } = this.#code.steps[step]!;
     // What stands in memory is loaded where it is read.
-    if (op === VectorOp.State || op === VectorOp.Slot) return;
+    if (op === VectorOp.State || op === VectorOp.Slot || op === VectorOp.Constant) return;
     const slot = this.#homes.slotOf[step]!;
     const reads = this.#reads.get(step) ?? 0;
     if (reads === 0 && slot < 0) return;
     const { code, depth } = this.#expression(step);
     if (slot >= 0) {
       const kept = reads > 0 ? this.#toLocal(step, code) : code;
-      this.#store(this.#emission.area.slots + slot * LANES, kept);
+      this.#store(this.#emission.area.slots + slot * LANES, kept, isNumber(op));
     } else if (reads > 1 || depth >= DEPTH_LIMIT) this.#setLocal(step, code);
     else this.#pending.set(step, { code, depth });
   }
 
   #value(step: number): { code: binaryen.ExpressionRef; depth: number } {
+    const { op, lanes } = this.#code.steps[step]!;
+    if (op === VectorOp.Constant) {
+      return { code: numberCode(this.#emission.module, lanes), depth: 1 };
+    }
     const pending = this.#pending.get(step);
     if (pending !== undefined) {
       this.#pending.delete(step);
@@ -122,7 +129,7 @@ export class VectorEmitter {
     }
     const held = this.#locals.get(step);
     if (held !== undefined) {
-      return { code: this.#emission.module.local.get(held, this.#types.v128), depth: 0 };
+      return { code: this.#emission.module.local.get(held, this.#typeOf(step)), depth: 0 };
     }
     const loaded = { code: this.#load(step), depth: 2 };
     if ((this.#reads.get(step) ?? 0) <= 1) return loaded;
@@ -130,13 +137,14 @@ export class VectorEmitter {
   }
 
   #load(step: number): binaryen.ExpressionRef {
-    const { v128 } = this.#emission.module;
+    const { i64, v128 } = this.#emission.module;
     const { op, a } = this.#code.steps[step]!;
     if (op === VectorOp.State) return v128.load(a, 1, this.#at(this.#pointers.current), '0');
     if (op === VectorOp.Splat) return this.#splat(a);
     const slot = op === VectorOp.Slot ? a : this.#homes.slotOf[step]!;
     const address = this.#emission.area.slots + slot * LANES;
-    return v128.load(address, 4, this.#at(this.#pointers.next), '0');
+    const pointer = this.#at(this.#pointers.next);
+    return isNumber(op) ? i64.load(address, 4, pointer, '0') : v128.load(address, 4, pointer, '0');
   }
 
   #expression(step: number): { code: binaryen.ExpressionRef; depth: number } {
@@ -150,6 +158,7 @@ export class VectorEmitter {
     }
     if (op === VectorOp.Mux) return this.#mux(a, b, c);
     if (op === VectorOp.Stack) return this.#stack(a, b);
+    if (op >= VectorOp.Number) return this.#numeric(step);
     const left = this.#value(a);
     if (op === VectorOp.Invert) {
       const mask = constant(
@@ -198,6 +207,17 @@ export class VectorEmitter {
     const ones = constant(module, new Array<number>(LANES).fill(1));
     const code = v128.or(i8x16.add(once.code, again.code), v128.and(bits.code, ones));
     return { code, depth: Math.max(once.depth, bits.depth + 1) + 2 };
+  }
+
+  #numeric(step: number): { code: binaryen.ExpressionRef; depth: number } {
+    const { module } = this.#emission;
+    const { op, a, b, lanes } = this.#code.steps[step]!;
+    const { code, depth } = this.#value(a);
+    const other = stepOperands[op] === 2 ? this.#value(b) : undefined;
+    return {
+      code: numericCode(module, op, code, other?.code, lanes[0]),
+      depth: Math.max(depth, other?.depth ?? 0) + 3,
+    };
   }
 
   #splat(value: number): binaryen.ExpressionRef {
@@ -253,8 +273,12 @@ export class VectorEmitter {
     return this.#emission.module.local.get(pointer, this.#types.i32);
   }
 
+  #typeOf(step: number): binaryen.Type {
+    return isNumber(this.#code.steps[step]!.op) ? this.#types.i64 : this.#types.v128;
+  }
+
   #setLocal(step: number, code: binaryen.ExpressionRef): number {
-    const number = this.#firstLocal + this.localCount++;
+    const number = this.#firstLocal + this.locals.push(this.#typeOf(step)) - 1;
     this.#locals.set(step, number);
     this.statements.push(this.#emission.module.local.set(number, code));
     return number;
@@ -262,12 +286,13 @@ export class VectorEmitter {
 
   #toLocal(step: number, code: binaryen.ExpressionRef): binaryen.ExpressionRef {
     const number = this.#setLocal(step, code);
-    return this.#emission.module.local.get(number, this.#types.v128);
+    return this.#emission.module.local.get(number, this.#typeOf(step));
   }
 
-  #store(offset: number, code: binaryen.ExpressionRef): void {
-    const { v128 } = this.#emission.module;
-    this.statements.push(v128.store(offset, 4, this.#at(this.#pointers.next), code, '0'));
+  #store(offset: number, code: binaryen.ExpressionRef, isNumber: boolean): void {
+    const { i64, v128 } = this.#emission.module;
+    const { store } = isNumber ? i64 : v128;
+    this.statements.push(store(offset, 4, this.#at(this.#pointers.next), code, '0'));
   }
 }
 

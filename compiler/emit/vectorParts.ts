@@ -41,7 +41,7 @@ export function stepHomes(code: VectorCode, parts: readonly VectorPart[]): StepH
 
 // State, slots and splats are in memory as they are: they are loaded where they are read.
 const isComputed = ({ steps }: VectorCode, step: number): boolean =>
-  steps[step]!.op > VectorOp.Splat;
+  steps[step]!.op > VectorOp.Splat && steps[step]!.op !== VectorOp.Constant;
 
 /** The steps of each stage cut into parts of one function each. */
 export function vectorParts({ stages }: VectorCode): VectorPart[][] {

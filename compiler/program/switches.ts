@@ -18,6 +18,8 @@ export interface PassSwitches {
   readonly sweepNodes?: boolean;
   /** Operations that are made many times over are packed, sixteen in a vector. */
   readonly packWords?: boolean;
+  /** Where words are packed: ripple adders and counters are made as additions of numbers. */
+  readonly addWords?: boolean;
   /** Where nothing is packed: registers of one enable or reset are updated sixteen at a time. */
   readonly groupRegisters?: boolean;
   /** Where nothing is packed: parts that are computed with fewer operations are replaced. */
@@ -48,6 +50,7 @@ export const passNames = [
   'mergeRegisters',
   'sweepNodes',
   'packWords',
+  'addWords',
   'groupRegisters',
   'rewriteCuts',
   'choosePolarity',

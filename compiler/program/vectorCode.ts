@@ -1,6 +1,7 @@
 /**
  * Operations on vectors of sixteen bytes, of which bit 0 of each byte counts, except where they
- * are told to be whole.
+ * are told to be whole. Others work on
+ * whole numbers of 64 bits.
  */
 export const VectorOp = {
   /** Sixteen state bits from place `a` on. */
@@ -26,10 +27,31 @@ export const VectorOp = {
   Pick: 11,
   /** Whole bytes: those of `a` one place higher, with the bits of `b` as their lowest ones. */
   Stack: 12,
+  /** The number of sixteen bits that the lanes of `a` make, lane 0 lowest. */
+  Number: 13,
+  /** The number `lanes`, in sixteens of bits, the lowest first. */
+  Constant: 14,
+  /** The number `a + b`. */
+  Add: 15,
+  /** The number `a`, `lanes[0]` bits up, or down where that is negative. */
+  Shift: 16,
+  /** The numbers `a | b`, of which no bit is 1 in both. */
+  Join: 17,
+  /** The bits of the number `a` that are 1 in the number `b`. */
+  Mask: 18,
+  /** The bits of the number `a`, inverted where they are 1 in the number `b`. */
+  Flip: 19,
+  /** Whole bytes: the eight of the number `a`, twice. */
+  Bytes: 20,
 } as const;
 
 /** How many operands are results of other steps, indexed by `VectorOp`. */
-export const stepOperands: readonly number[] = [0, 0, 0, 0, 2, 1, 2, 2, 2, 2, 3, 1, 2];
+export const stepOperands: readonly number[] = [
+  0, 0, 0, 0, 2, 1, 2, 2, 2, 2, 3, 1, 2, 1, 0, 2, 1, 2, 2, 2, 1,
+];
+
+/** Whether a step gives a number and no vector. */
+export const isNumber = (op: number): boolean => op >= VectorOp.Number && op <= VectorOp.Flip;
 
 /** One vector operation. Operands are steps, except where `VectorOp` says otherwise. */
 export interface VectorStep {

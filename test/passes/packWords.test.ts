@@ -7,7 +7,7 @@ import { LogicBuilder } from '../../compiler/logic/logicBuilder.js';
 import { growPacks } from '../../compiler/passes/packWords/growPacks.js';
 import { NO_NODE } from '../../compiler/passes/packWords/packs.js';
 import { breakCircles, stagesOf } from '../../compiler/passes/packWords/units.js';
-import { VectorOp } from '../../compiler/program/vectorCode.js';
+import { isNumber, VectorOp } from '../../compiler/program/vectorCode.js';
 import { courseOf, enginesOf } from '../support/engines.js';
 import { logicOf } from '../support/logic.js';
 import { randomWords } from '../support/randomWords.js';
@@ -38,7 +38,9 @@ describe('packed programs', () => {
     );
     await fc.assert(agrees, { seed: 7, numRuns: 60 });
     // The law says nothing about vectors that no circuit has.
-    expect([...seen.keys()].sort((p, q) => p - q)).toEqual(Object.values(VectorOp));
+    const vectorOps = (ops: Iterable<number>): number[] =>
+      [...ops].filter((op) => !isNumber(op)).sort((p, q) => p - q);
+    expect(vectorOps(seen.keys())).toEqual(vectorOps(Object.values(VectorOp)));
   });
 });
 

@@ -12,6 +12,7 @@ import { courseOf } from '../support/engines.js';
 import { designFrom, ownDesign } from '../support/ownCircuits.js';
 import { randomBanks } from '../support/randomBanks.js';
 import { randomCircuit } from '../support/randomCircuit.js';
+import { randomSums } from '../support/randomSums.js';
 import { randomWords } from '../support/randomWords.js';
 import { randomRows } from '../support/responses.js';
 
@@ -21,6 +22,7 @@ const CYCLES = 40;
 const circuits = fc.oneof(
   randomWords(),
   randomBanks(),
+  randomSums(),
   randomCircuit({ asynchronous: true, unknowns: true }),
   randomCircuit({ clocking: 'gated', latches: true, asynchronous: true }),
 );
@@ -59,22 +61,23 @@ describe('passes left out', () => {
 });
 
 describe('each switch', () => {
-  // Two counters that count the same, a bank with an enable, a bus of exclusive-ors.
+  // Two counters that count the same, a bank with an enable, a bus of exclusive-ors, a sum.
   const design = designFrom(
     new Source(
       'switches.v',
       `module switches(input clk, input en, input s, input [63:0] d, output [63:0] y, output z, output [1:0] w);
         reg [7:0] a, b;
-        reg [63:0] held, mixed;
+        reg [63:0] held, mixed, total;
         wire p = (s & d[0]) | (~s & d[1]), q = (s & d[0]) | (~s & d[1]);
         wire m = (d[2] & d[3]) | (d[4] & (d[2] | d[3])), n = (d[2] & d[3]) | (d[4] & (d[2] ^ d[3]));
         always @(posedge clk) begin
           a <= a + 1;
           b <= b + 1;
           if (en) held <= d;
+          total <= total + held;
           mixed <= (held ^ {mixed[62:0], p}) & ~d;
         end
-        assign y = held, z = ^(a & b) ^ q ^ mixed[63] ^ m ^ n, w = {mixed[1], &d[9:0] | &mixed[9:0]};
+        assign y = held, z = ^(a & b) ^ q ^ mixed[63] ^ total[63] ^ m ^ n, w = {mixed[1], &d[9:0] | &mixed[9:0]};
       endmodule`,
     ),
   );
@@ -88,7 +91,11 @@ describe('each switch', () => {
       // What is packed hides what the other passes do, and rewriting finds what others may leave.
       const alone = { packWords: false, rewriteCuts: false };
       const rest =
-        name === 'packWords' ? {} : name === 'rewriteCuts' ? { packWords: false } : alone;
+        name === 'packWords' || name === 'addWords'
+          ? {}
+          : name === 'rewriteCuts'
+            ? { packWords: false }
+            : alone;
       const changed = (await bytes({ ...rest, [name]: false })) !== (await bytes(rest));
       // The state is too large for some.
       expect(changed, name).toBe(name !== 'tables' && name !== 'holdStates');

@@ -1,7 +1,8 @@
 import { type Literal, type Logic, LogicOp, nodeOf } from '../../logic/logic.js';
+import type { Addition } from '../additions/additions.js';
 import { alignedOperands } from './alignment.js';
 import { islandsOf } from './islands.js';
-import { isOneNode, LANES, lanesOf, NO_NODE, Packs, type Tuple } from './packs.js';
+import { isOneNode, LANES, lanesOf, NO_NODE, Packs, summands, type Tuple } from './packs.js';
 import { seedGroups } from './seeds.js';
 import { heightsOf, shapesOf, WHOLE_SHAPE } from './shapes.js';
 
@@ -35,10 +36,11 @@ const SEED_DEPTHS = [WHOLE_SHAPE, 12, 8, 5, 3, 2, 1];
  * (superword-level parallelism: S. Larsen, S. Amarasinghe, "Exploiting superword level parallelism
  * with multimedia instruction sets", PLDI 2000, here over a graph of gates). State bits that are
  * drawn in find their places in the state that way. Which packs are worth it is decided later; for a
- * large graph that repeats little, none is made.
+ * large graph that repeats little, none is made but for what is added.
  */
-export function growPacks(logic: Logic): Packs {
-  const grower = new Grower(logic);
+export function growPacks(logic: Logic, additions: readonly Addition[] = []): Packs {
+  const grower = new Grower(logic, additions);
+  grower.growSummands();
   if (!grower.isPromising()) return grower.packs;
   grower.findIslands();
   for (const depth of SEED_DEPTHS) grower.growAlike(depth);
@@ -59,8 +61,8 @@ class Grower {
   readonly #followers: (number[] | undefined)[] = [];
   readonly #waiting: Tuple[] = [];
 
-  constructor(logic: Logic) {
-    this.packs = new Packs(logic);
+  constructor(logic: Logic, additions: readonly Addition[]) {
+    this.packs = new Packs(logic, additions);
     this.#logic = logic;
     this.#shapes = shapesOf(logic);
     this.#heights = heightsOf(logic);
@@ -91,6 +93,14 @@ class Grower {
   /** Keeps packs from starting in several islands. */
   findIslands(): void {
     this.#islands = islandsOf(this.#logic, this.#shapes[REPEATED_DEPTH]!, LEAST_SEEDS);
+  }
+
+  /** Starts packs from what is added, in the lanes in which the sums stand. */
+  growSummands(): void {
+    for (const addition of this.packs.additions) {
+      this.#waiting.push(...summands(addition));
+      this.#drawAll();
+    }
   }
 
   /** Starts packs from nodes whose cones look alike to a depth, the highest first. */

@@ -8,13 +8,21 @@ import {
 } from '../../logic/logic.js';
 import { mapEffects } from '../../logic/sinks.js';
 import type { RowSink, VectorSink } from '../../program/vectorCode.js';
+import type { Addition } from '../additions/additions.js';
 import { growPacks } from './growPacks.js';
 import { LANES, type Packs, type Tuple } from './packs.js';
-import { areWorthIt, prunePacks } from './prunePacks.js';
+import { savedPart } from './prices.js';
+import { prunePacks } from './prunePacks.js';
 import { readersOf } from './readers.js';
 import { stackedRows } from './stackedRows.js';
 import { breakCircles, type Stages, stagesOf } from './units.js';
 import { type PlannedGather, VectorPlan } from './vectorPlan.js';
+
+/** Packing costs calls and waits that are not counted: it must save at least this part. */
+const LEAST_SAVED = 0.15;
+
+/** Where only sums make it worth it, registers are not updated in groups: this much must be saved. */
+const LEAST_SAVED_BY_SUMS = 0.25;
 
 /** A graph of which a part is computed sixteen bits at a time. */
 export interface PackedLogic {
@@ -44,13 +52,36 @@ export interface PackedLogic {
  * Finds operations that can be made on sixteen bits at a time, with the state bits laid out to suit
  * them, and takes them out of the graph. Undefined where nothing is worth it.
  */
-export function packWords(logic: Logic): PackedLogic | undefined {
-  const packs = growPacks(logic);
+export function packWords(
+  logic: Logic,
+  additions: readonly Addition[] = [],
+): PackedLogic | undefined {
+  const packs = bestPacks(logic, additions);
+  return packs === undefined ? undefined : new Packing(packs).packed();
+}
+
+// Sums decide where everything else stands, so that each set of them is tried from the start.
+function bestPacks(logic: Logic, additions: readonly Addition[]): Packs | undefined {
+  const without = additions.length === 0 ? undefined : bestPacks(logic, []);
+  let standing = additions;
+  let packs = grownPacks(logic, standing);
+  while (packs.dissolved.size > 0) {
+    const { dissolved } = packs;
+    standing = standing.filter((addition) => !dissolved.has(addition));
+    if (standing.length === 0) return without;
+    packs = grownPacks(logic, standing);
+  }
+  const saved = savedPart(packs);
+  if (saved < (without === undefined ? LEAST_SAVED_BY_SUMS : LEAST_SAVED)) return without;
+  return without !== undefined && savedPart(without) >= saved ? without : packs;
+}
+
+function grownPacks(logic: Logic, additions: readonly Addition[]): Packs {
+  const packs = growPacks(logic, additions);
   prunePacks(packs);
   breakCircles(packs);
   prunePacks(packs);
-  if (!areWorthIt(packs)) return undefined;
-  return new Packing(packs).packed();
+  return packs;
 }
 
 class Packing {
@@ -124,7 +155,7 @@ class Packing {
 
   // Packs whose lanes are read one by one keep them in slots.
   #slots(): VectorSink[] {
-    const { start, reader } = readersOf(this.#logic);
+    const { start, reader } = readersOf(this.#packs);
     const { nodeCount, states } = this.#logic;
     const packedState = this.#packedStates();
     const isSingle = (by: number): boolean =>
@@ -134,6 +165,7 @@ class Packing {
           ? packedState[by - nodeCount] === 0
           : true;
     const sinks: VectorSink[] = [];
+    const slotOfStep = new Map<number, number>();
     for (const number of this.#stages.packOrder) {
       const pack = this.#packs.get(number)!;
       if (pack.op === LogicOp.State) continue;
@@ -141,11 +173,16 @@ class Packing {
         (node) => node >= 0 && reader.subarray(start[node]!, start[node + 1]!).some(isSingle),
       );
       if (!isRead) continue;
-      const slot = this.#plan.newSlot();
+      // Packs whose lanes are different ones of one vector have one slot.
+      const { step } = this.#plan.ofPack(number);
+      const known = slotOfStep.get(step);
+      const slot = known ?? this.#plan.newSlot();
       this.#slotOf.set(number, slot);
       // Scalar code that reads a lane, if only to pass it on inverted, stands in a later stage.
       this.#stageCount = Math.max(this.#stageCount, this.#stages.ofPack[number]! + 2);
-      sinks.push({ step: this.#plan.ofPack(number).step, invert: false, to: slot });
+      if (known !== undefined) continue;
+      slotOfStep.set(step, slot);
+      sinks.push({ step, invert: false, to: slot });
     }
     return sinks;
   }
@@ -198,6 +235,12 @@ class Packing {
     for (let node = 1; node < logic.nodeCount; node++) {
       if (op[node] === LogicOp.State) a[node] = placeOf[a[node]!]!;
       if (op[node]! < LogicOp.And) continue;
+      if (this.#packs.isDead[node] === 1) {
+        // No node may be read that stands for something else now.
+        op[node] = LogicOp.Input;
+        a[node] = 0;
+        continue;
+      }
       if (this.#packs.isPacked(node)) {
         op[node] = LogicOp.Input;
         a[node] = logic.inputCount + this.#laneAddress(node);

@@ -1,5 +1,6 @@
-import { type Logic, LogicOp } from '../../logic/logic.js';
+import { LogicOp, nodeOf } from '../../logic/logic.js';
 import { writeLiterals } from '../../logic/writes.js';
+import { type Packs, SUM } from './packs.js';
 
 /** Who reads each node of a graph: other nodes, the next state of bits, and outputs. */
 export interface Readers {
@@ -12,26 +13,37 @@ export interface Readers {
   readonly reader: Uint32Array;
 }
 
-/** Lists the readers of all nodes. */
-export function readersOf(logic: Logic): Readers {
+/**
+ * Lists the readers of all nodes. What is added is read by the lowest bit of the sum, and by no node
+ * that an addition makes superfluous.
+ */
+export function readersOf(packs: Packs): Readers {
+  const { logic } = packs;
   const start = new Uint32Array(logic.nodeCount + 1);
-  eachRead(logic, (node) => start[node + 1]!++);
+  eachRead(packs, (node) => start[node + 1]!++);
   for (let node = 0; node < logic.nodeCount; node++) start[node + 1]! += start[node]!;
   const reader = new Uint32Array(start[logic.nodeCount]!);
   const next = start.slice();
-  eachRead(logic, (node, by) => {
+  eachRead(packs, (node, by) => {
     reader[next[node]!++] = by;
   });
   return { start, reader };
 }
 
-function eachRead(logic: Logic, read: (node: number, reader: number) => void): void {
+function eachRead(packs: Packs, read: (node: number, reader: number) => void): void {
+  const { logic, isDead } = packs;
   const { op, a, b, c, nodeCount } = logic;
   for (let node = 1; node < nodeCount; node++) {
-    if (op[node]! < LogicOp.And) continue;
+    if (op[node]! < LogicOp.And || isDead[node] === 1) continue;
+    if (packs.get(packs.packOf[node]!)?.op === SUM) continue;
     read(a[node]! >>> 1, node);
     read(b[node]! >>> 1, node);
     if (op[node] === LogicOp.Mux) read(c[node]! >>> 1, node);
+  }
+  for (const { words, sum } of packs.additions) {
+    const by = nodeOf(sum.find((literal) => literal >= 0)!);
+    if (!packs.isPacked(by)) continue;
+    for (const literal of words.flat()) read(nodeOf(literal), by);
   }
   for (const [bit, literal] of logic.next.entries()) read(literal >>> 1, nodeCount + bit);
   const outside = nodeCount + logic.states.length;

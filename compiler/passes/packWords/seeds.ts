@@ -18,6 +18,7 @@ export function seedGroups(
   for (let node = 1; node < logic.nodeCount; node++) {
     const op = logic.op[node]!;
     if (op < LogicOp.And || op > LogicOp.Mux || packs.isPacked(node)) continue;
+    if (packs.isDead[node] === 1) continue;
     const key = shape[node]! + (islands?.[node] ?? 0) * 2 ** 32;
     const group = groups.get(key);
     if (group === undefined) groups.set(key, [node]);

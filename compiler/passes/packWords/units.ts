@@ -73,7 +73,9 @@ export interface Stages {
 /** The earliest stage of each operation and pack; there must be no circles. */
 export function stagesOf(packs: Packs): Stages {
   const staging = new Staging(packs);
-  for (let node = 1; node < packs.logic.nodeCount; node++) staging.visit(node);
+  for (let node = 1; node < packs.logic.nodeCount; node++) {
+    if (packs.isDead[node] === 0) staging.visit(node);
+  }
   const count = 1 + Math.max(staging.ofNode.reduce(max, 0), staging.ofPack.reduce(max, 0));
   const { ofNode, ofPack, packOrder } = staging;
   return { ofNode, ofPack, count, packOrder };

@@ -1,5 +1,6 @@
 import { type Literal, LogicOp, nodeOf } from '../../logic/logic.js';
 import { stepOperands, VectorOp, type VectorStep } from '../../program/vectorCode.js';
+import { NumberPlan } from './numberPlan.js';
 import { isOneNode, LANES, lanesOf, NO_NODE, type Pack, type Packs, type Tuple } from './packs.js';
 import type { Stages } from './units.js';
 
@@ -46,6 +47,7 @@ export class VectorPlan {
   readonly #packs: Packs;
   readonly #stages: Stages;
   readonly #placeOf: ReadonlyMap<number, number>;
+  readonly #numbers: NumberPlan;
   readonly #ofPack: (Vector | undefined)[] = [];
   readonly #known = new Map<string, number>();
   readonly #splatLanes = new Map<number, { gather: PlannedGather; used: number }>();
@@ -55,6 +57,7 @@ export class VectorPlan {
     this.#packs = packs;
     this.#stages = stages;
     this.#placeOf = placeOf;
+    this.#numbers = new NumberPlan(this, packs);
   }
 
   /** The vector of a pack whose operands have been planned before. */
@@ -67,9 +70,9 @@ export class VectorPlan {
   stacked(tuples: readonly Tuple[]): number {
     const bits = tuples.map((tuple) => {
       const { step, inverted } = this.together(tuple);
-      return inverted ? this.#step(VectorOp.Invert, step, 0, 0, EVERY_LANE) : step;
+      return inverted ? this.step(VectorOp.Invert, step, 0, 0, EVERY_LANE) : step;
     });
-    return bits.reduceRight((higher, bit) => this.#step(VectorOp.Stack, higher, bit));
+    return bits.reduceRight((higher, bit) => this.step(VectorOp.Stack, higher, bit));
   }
 
   /** A new lane slot. */
@@ -91,17 +94,18 @@ export class VectorPlan {
     if (counted.every((inversion) => inversion === 0)) return { step, inverted: false };
     if (counted.every((inversion) => inversion === 1)) return { step, inverted: true };
     const lanes = inversions.map((inversion) => Number(inversion === 1));
-    return { step: this.#step(VectorOp.Invert, step, 0, 0, lanes), inverted: false };
+    return { step: this.step(VectorOp.Invert, step, 0, 0, lanes), inverted: false };
   }
 
   #planned(number: number, pack: Pack): Vector {
+    if (pack.sum !== undefined) return this.#numbers.bitsOf(pack.sum.addition, pack.sum.first);
     if (pack.op === LogicOp.State) {
-      return { step: this.#step(VectorOp.State, this.#placeOf.get(number)!), inverted: false };
+      return { step: this.step(VectorOp.State, this.#placeOf.get(number)!), inverted: false };
     }
     const [a, b, c] = pack.operands.map((tuple) => this.together(tuple));
     if (pack.op === LogicOp.Xor) {
       return {
-        step: this.#step(VectorOp.Xor, a!.step, b!.step),
+        step: this.step(VectorOp.Xor, a!.step, b!.step),
         inverted: a!.inverted !== b!.inverted,
       };
     }
@@ -110,11 +114,11 @@ export class VectorPlan {
 
   #and(a: Vector, b: Vector): Vector {
     if (a.inverted && b.inverted) {
-      return { step: this.#step(VectorOp.Or, a.step, b.step), inverted: true };
+      return { step: this.step(VectorOp.Or, a.step, b.step), inverted: true };
     }
-    if (a.inverted) return { step: this.#step(VectorOp.AndNot, b.step, a.step), inverted: false };
+    if (a.inverted) return { step: this.step(VectorOp.AndNot, b.step, a.step), inverted: false };
     const op = b.inverted ? VectorOp.AndNot : VectorOp.And;
-    return { step: this.#step(op, a.step, b.step), inverted: false };
+    return { step: this.step(op, a.step, b.step), inverted: false };
   }
 
   #mux(select: Vector, zero: Vector, one: Vector): Vector {
@@ -122,9 +126,9 @@ export class VectorPlan {
     const turned =
       low.inverted === high.inverted
         ? high.step
-        : this.#step(VectorOp.Invert, high.step, 0, 0, EVERY_LANE);
+        : this.step(VectorOp.Invert, high.step, 0, 0, EVERY_LANE);
     return {
-      step: this.#step(VectorOp.Mux, select.step, low.step, turned),
+      step: this.step(VectorOp.Mux, select.step, low.step, turned),
       inverted: low.inverted,
     };
   }
@@ -155,7 +159,7 @@ export class VectorPlan {
     if (second === undefined) {
       const isInPlace = first.from.every((lane, to) => lane < 0 || lane === to);
       if (isInPlace) return first.step;
-      return this.#step(VectorOp.Shuffle, first.step, first.step, 0, first.from);
+      return this.step(VectorOp.Shuffle, first.step, first.step, 0, first.from);
     }
     let joined = this.#join(first.step, first.from, second);
     const filled = first.from.map((lane, to) => (lane >= 0 || second.from[to]! >= 0 ? to : -1));
@@ -168,7 +172,7 @@ export class VectorPlan {
 
   #join(step: number, from: readonly number[], source: Source): number {
     const lanes = from.map((lane, to) => (source.from[to]! >= 0 ? LANES + source.from[to]! : lane));
-    return this.#step(VectorOp.Shuffle, step, source.step, 0, lanes);
+    return this.step(VectorOp.Shuffle, step, source.step, 0, lanes);
   }
 
   #splat(tuple: Tuple): number | undefined {
@@ -237,11 +241,11 @@ export class VectorPlan {
   // Bits of one place in their bytes are read from the same bytes as those of others.
   #inputs(bits: readonly number[]): number {
     const bytes = bits.map((bit) => (bit < 0 ? -1 : bit >>> 3));
-    const step = this.#step(VectorOp.RowBytes, 0, 0, 0, bytes);
+    const step = this.step(VectorOp.RowBytes, 0, 0, 0, bytes);
     const places = bits.map((bit) => (bit < 0 ? -1 : bit & 7));
     return places.every((place) => place <= 0)
       ? step
-      : this.#step(VectorOp.Pick, step, 0, 0, places);
+      : this.step(VectorOp.Pick, step, 0, 0, places);
   }
 
   #gathered(literals: Literal[]): number {
@@ -258,7 +262,15 @@ export class VectorPlan {
     return step;
   }
 
-  #step(op: number, a: number, b = 0, c = 0, lanes: readonly number[] = NONE): number {
+  /** The nodes of a tuple side by side as they are kept, and which of its literals are inverse to that. */
+  kept(tuple: Tuple): { step: number; inversions: number[] } {
+    const isOne = isOneNode(tuple);
+    const inversions = tuple.map((literal) => (literal < 0 ? 0 : this.#inversion(literal, isOne)));
+    return { step: this.#arranged(tuple), inversions };
+  }
+
+  /** A step, made once. */
+  step(op: number, a: number, b = 0, c = 0, lanes: readonly number[] = NONE): number {
     const key = `${op} ${a} ${b} ${c} ${lanes.join()}`;
     const known = this.#known.get(key);
     if (known !== undefined) return known;
