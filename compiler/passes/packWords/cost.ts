@@ -8,9 +8,9 @@ export const Cost = {
   vectorMux: 3,
   splat: 1,
   /** Bringing the lanes of one vector into another order. */
-  permute: 1.5,
+  permute: 5,
   /** Joining lanes of one more vector. */
-  join: 3,
+  join: 11,
   /** Storing one bit that is computed by itself, for a vector to hold it. */
   gather: 1.5,
   /** Copying a bit of the state, or an input, for that. */
