@@ -44,6 +44,11 @@ describe('a wrong input', () => {
     ['an expectation of no port', [...held, '--expect', 'nosuch.csv'], 'nosuch.csv:1:7: '],
     ['a missing netlist', ['run', 'absent.v', ...held.slice(2)], 'error: absent.v '],
     ['a missing stimulus', [...run, '--stimulus', 'absent.csv'], 'error: absent.csv '],
+    [
+      'a stimulus that is a folder',
+      [...run, '--stimulus', '.'],
+      'error: . cannot be used: it is a d',
+    ],
     ['a missing expectation', [...held, '--expect', 'absent.csv'], 'error: absent.csv '],
     [
       'a response in no folder',

@@ -1,11 +1,15 @@
+import { spawnSync } from 'node:child_process';
 import { once } from 'node:events';
-import { readFileSync } from 'node:fs';
+import { closeSync, existsSync, openSync, readFileSync } from 'node:fs';
 import { text } from 'node:stream/consumers';
 import { describe, expect, inject, it } from 'vitest';
-import { outcomeOf, WorkFolder } from '../support/command.js';
+import { command, outcomeOf, WorkFolder } from '../support/command.js';
 import { chain } from './netlists.js';
 
-const folder = new WorkFolder({ 'chain.bench': chain });
+const folder = new WorkFolder({
+  'chain.bench': chain,
+  'toggle.bench': 'INPUT(d)\nOUTPUT(q)\nq = DFF(n)\nn = XOR(q, d)\n',
+});
 
 describe('clockstride', () => {
   it('is built from its sources without complaint', () => {
@@ -52,11 +56,21 @@ describe('clockstride', () => {
     expect(await text(started.stderr)).toBe('');
     expect(await ended).toEqual([0, null]);
   });
+
+  it.runIf(existsSync('/dev/full'))('says so where its output finds no room', () => {
+    const full = openSync('/dev/full', 'w');
+    const { status, stderr } = spawnSync(process.execPath, [command, 'inspect', 'chain.bench'], {
+      ...{ cwd: folder.path, encoding: 'utf8', stdio: ['ignore', full, 'pipe'] },
+    });
+    closeSync(full);
+    expect(stderr).toMatch(/^error: standard output cannot be used: .+\n$/);
+    expect(status).toBe(2);
+  });
 });
 
 describe('an interrupt', () => {
   it('ends a run early, with a summary and the response up to there', async () => {
-    const args = ['run', 'chain.bench', '--random', '1', '--cycles', '20_000_000'];
+    const args = ['run', 'toggle.bench', '--random', '1', '--cycles', '20_000_000'];
     const started = folder.start(
       ...args,
       '--engine',
@@ -79,6 +93,6 @@ describe('an interrupt', () => {
     const rows = folder.read('out.csv').trimEnd().split('\n').slice(1);
     expect(rows).toHaveLength(cycles);
     expect(rows.every((row, i) => row.startsWith(`${i},`))).toBe(true);
-    expect(folder.names()).toEqual(['chain.bench', 'out.csv']);
+    expect(folder.names()).toEqual(['chain.bench', 'out.csv', 'toggle.bench']);
   });
 });
