@@ -63,6 +63,23 @@ export class GrowableUint32 {
     this.#length = length;
   }
 
+  /** Appends the entries of a list that stand at certain places. */
+  appendFrom(values: Uint32Array, places: Uint32Array): void {
+    const count = places.length;
+    if (count > MANY) {
+      this.append(
+        places.map((place) => values[place]!),
+        count,
+      );
+      return;
+    }
+    const end = this.#length + count;
+    if (end > this.#data.length) this.#grow(end);
+    const data = this.#data;
+    for (let i = 0, to = this.#length; i < count; i++) data[to++] = values[places[i]!]!;
+    this.#length = end;
+  }
+
   /** Forgets all entries, and the room of a list that had become long. */
   clear(): void {
     if (this.#data.length > LONG) this.#data = new Uint32Array(64);

@@ -121,22 +121,32 @@ export class HierarchyBuilder {
 
   /**
    * Adds an instance of a module. `nets` has one net for each bit of the module's signals, in the
-   * order of `Signal.offset`, `count` in all; `name` is a text or a number of the source. Returns
-   * the scope's index.
+   * order of `Signal.offset`; `name` is a text or a number of the source. Returns the scope's index.
    */
-  addScope(
+  addScope(name: string | number, parent: number, module: number, nets: ArrayLike<number>): number {
+    const scope = this.#add(name, parent, module);
+    this.#netOf.append(nets, nets.length);
+    return scope;
+  }
+
+  /** Does what `addScope` does, where the nets of the bits stand at certain places of `nets`. */
+  addScopeOf(
     name: string | number,
     parent: number,
     module: number,
-    nets: ArrayLike<number>,
-    count = nets.length,
+    nets: Uint32Array,
+    places: Uint32Array,
   ): number {
-    const scope = this.#names.push(name);
+    const scope = this.#add(name, parent, module);
+    this.#netOf.appendFrom(nets, places);
+    return scope;
+  }
+
+  #add(name: string | number, parent: number, module: number): number {
     this.#parent.push(parent);
     this.#module.push(module);
     this.#start.push(this.#netOf.length);
-    this.#netOf.append(nets, count);
-    return scope;
+    return this.#names.push(name);
   }
 
   /** The dotted path of a scope below the top; empty for the top itself. */

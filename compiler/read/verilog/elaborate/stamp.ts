@@ -27,6 +27,8 @@ export interface PlacedBox {
 /** A template that is being stamped: how far its children are, and where its nets went. */
 interface Frame {
   template: Template;
+  /** Its place among the templates. */
+  number: number;
   /** The circuit's net for each net of the template. */
   nets: Uint32Array;
   /** The circuit's scope of each block of the template. */
@@ -37,6 +39,11 @@ interface Frame {
   /** Where the circuit's logic is said to come from, instead of the text of a library cell. */
   origin: Origin | undefined;
 }
+
+const noMemories: readonly PlacedMemory[] = [];
+
+/** So many nets of a template are few. */
+const FEW = 64;
 
 /**
  * Writes a template and everything below it into a circuit.
@@ -51,10 +58,8 @@ export class Stamper {
   readonly #frames: Frame[] = [];
   // Lists of each length that gates are handed over in, so that none is made per gate.
   readonly #lists: NetId[][] = [];
-  // The nets behind the names of the scope that is being added.
-  #scratch = new Uint32Array(64);
   /** Index of the names of each template's first block in the circuit. */
-  readonly #modules = new Map<Template, number>();
+  readonly #modules: (number | undefined)[] = [];
   /** Values at power-up that other modules give to state elements, by the circuit's net. */
   readonly #farInitials = new Map<number, 0 | 1>();
   readonly #memories: MemoryStamper;
@@ -70,7 +75,7 @@ export class Stamper {
 
   /** Stamps the top; returns the circuit's nets of its boundary. */
   stamp(top: Template): Uint32Array {
-    const frame = this.#enter(0, top, undefined);
+    const frame = this.#enter(0, this.#templates.indexOf(top), undefined);
     this.#fill(frame);
     this.#addScopes(frame, top.name, 0);
     this.#memories.add(frame, 0, []);
@@ -88,9 +93,10 @@ export class Stamper {
   /** Stamps a child's own logic; whether it has children to be stamped. */
   #stampChild(parent: Frame, child: number, depth: number): boolean {
     const { children } = parent.template;
-    const template = this.#templates[children.template(child)]!;
+    const number = children.template(child);
+    const template = this.#templates[number]!;
     const takesOver = parent.origin === undefined && template.isCell;
-    const frame = this.#enter(depth, template, takesOver ? children.origin(child) : parent.origin);
+    const frame = this.#enter(depth, number, takesOver ? children.origin(child) : parent.origin);
     const { nets } = frame;
     const { boundary } = template;
     for (let place = 0; place < boundary.length; place++) {
@@ -103,13 +109,18 @@ export class Stamper {
     this.#fill(frame);
     const name = children.name(child);
     if (name !== 0) this.#addScopes(frame, name, parent.scopes[children.block(child)]!);
-    const shared = children.memoryImports(child).map(({ childMemory, memory }) => ({
+    if (template.recording.memories.length > 0) this.#addMemories(parent, child, frame, depth);
+    if (template.isBox) this.#addBox(parent, child, frame);
+    return template.children.count > 0;
+  }
+
+  #addMemories(parent: Frame, child: number, frame: Frame, depth: number): void {
+    const imports = parent.template.children.memoryImports(child);
+    const shared = imports.map(({ childMemory, memory }) => ({
       childMemory,
       placed: parent.memories[memory.number]!,
     }));
     this.#memories.add(frame, depth, shared);
-    if (template.isBox) this.#addBox(parent, child, frame);
-    return template.children.count > 0;
   }
 
   #addBox(parent: Frame, child: number, { template, nets, scopes }: Frame): void {
@@ -125,12 +136,14 @@ export class Stamper {
     });
   }
 
-  #enter(depth: number, template: Template, origin: Origin | undefined): Frame {
+  #enter(depth: number, number: number, origin: Origin | undefined): Frame {
+    const template = this.#templates[number]!;
     const count = template.recording.netCount;
     let frame = this.#frames[depth];
     if (frame === undefined) {
       frame = {
         template,
+        number,
         nets: new Uint32Array(64),
         scopes: [],
         memories: [],
@@ -140,8 +153,12 @@ export class Stamper {
       this.#frames[depth] = frame;
     }
     if (frame.nets.length < count) frame.nets = new Uint32Array(count * 2);
-    frame.nets.fill(NO_NET, 0, count);
+    // To fill a few by a call takes longer.
+    if (count > FEW) frame.nets.fill(NO_NET, 0, count);
+    else for (let net = 0; net < count; net++) frame.nets[net] = NO_NET;
     frame.template = template;
+    frame.number = number;
+    frame.memories = noMemories;
     frame.nextChild = 0;
     frame.origin = origin;
     return frame;
@@ -253,25 +270,24 @@ export class Stamper {
   }
 
   /** Adds a scope for an instance and one for each block inside it. */
-  #addScopes({ template, nets, scopes }: Frame, name: NameId | string, parent: number): void {
+  #addScopes(
+    { template, number, nets, scopes }: Frame,
+    name: NameId | string,
+    parent: number,
+  ): void {
     const { hierarchy } = this.#builder;
     const { blocks } = template;
-    let module = this.#modules.get(template);
+    let module = this.#modules[number];
     if (module === undefined) {
-      for (const [index, block] of blocks.entries()) {
-        const id = hierarchy.addModule(block.names);
-        if (index === 0) module = id;
-      }
-      this.#modules.set(template, module!);
+      const added = blocks.map(({ names }) => hierarchy.addModule(names));
+      module = added[0] ?? 0;
+      this.#modules[number] = module;
     }
     for (let index = 0; index < blocks.length; index++) {
       const block = blocks[index]!;
-      const count = block.nets.length;
-      if (count > this.#scratch.length) this.#scratch = new Uint32Array(2 * count);
-      for (let bit = 0; bit < count; bit++) this.#scratch[bit] = nets[block.nets[bit]!]!;
       const outer = index === 0 ? parent : scopes[block.parent]!;
       const own = index === 0 ? name : block.name;
-      scopes[index] = hierarchy.addScope(own, outer, module! + index, this.#scratch, count);
+      scopes[index] = hierarchy.addScopeOf(own, outer, module + index, nets, block.nets);
     }
   }
 }
