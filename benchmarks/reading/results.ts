@@ -1,5 +1,15 @@
 import type { Used } from './children.js';
 
+/** How fast files of one shape are read; times are the best of several readings. */
+export interface ShapeResult {
+  readonly name: string;
+  /** Of all files read. */
+  readonly bytes: number;
+  readonly seconds: number;
+  readonly processorSeconds: number;
+  readonly peakBytes: number;
+}
+
 /** What `reading.json` holds. Times of processors are of all threads, user and system. */
 export interface ReadingResult {
   readonly machine: {
@@ -28,6 +38,8 @@ export interface ReadingResult {
     /** Peak memory, Node itself included, over the bytes of the text. */
     readonly memoryPerText: number;
   };
+  /** Smaller files of other shapes, from the files to the circuit. */
+  readonly shapes: readonly ShapeResult[];
   /** `clockstride inspect` from start to end. */
   readonly inspect: Used;
   /** `clockstride run` from start to the end of one cycle. */
@@ -59,12 +71,23 @@ export function pageOf(result: ReadingResult): string {
     `That is ${figure(reading.megabytesPerSecond)} MB of text a second, ` +
       `${figure(reading.megabytesPerProcessorSecond)} MB a second of the`,
     `processor, and ${figure(reading.memoryPerText)} bytes of memory for each byte of text, Node itself included.`,
+    '',
+    'Smaller files of other shapes, from the file to the circuit. Node compiles its own code meanwhile,',
+    'which weighs more the less there is to read.',
+    '',
+    '| | text | passed | processor | MB a second | most memory |',
+    '|---|---|---|---|---|---|',
+    ...result.shapes.map(shapeRow),
   ];
   return `${lines.join('\n')}\n`;
 }
 
 const row = (what: string, { seconds, processorSeconds, peakBytes }: Used): string =>
   `| ${what} | ${figure(seconds)} s | ${figure(processorSeconds)} s | ${megabytes(peakBytes)} |`;
+
+const shapeRow = ({ name, bytes, seconds, processorSeconds, peakBytes }: ShapeResult): string =>
+  `| ${name} | ${megabytes(bytes)} | ${seconds.toFixed(2)} s | ${processorSeconds.toFixed(2)} s | ` +
+  `${figure(bytes / 1e6 / seconds)} | ${megabytes(peakBytes)} |`;
 
 const figure = (value: number): string => value.toFixed(1);
 const megabytes = (bytes: number): string => `${Math.round(bytes / 1e6)} MB`;
