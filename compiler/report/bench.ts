@@ -41,7 +41,9 @@ export async function benchDesign(
     const agreement = await checkAgreement(design.layout, contestants, rows.count);
     const timings = await timeAlternately(contestants, { seconds, rounds, onProgress });
     const code = codeFigures(own.code, gates);
-    return { ...resultOf(design, gates, contestants, timings), code, agreement, rounds, notes };
+    const heldNs = fiveDigits(own.heldNs());
+    const result = resultOf(design, gates, contestants, timings);
+    return { ...result, heldNs, code, agreement, rounds, notes };
   } finally {
     for (const each of native.contestants) each.close();
   }
@@ -66,7 +68,7 @@ function resultOf(
   gates: number,
   contestants: readonly Contestant[],
   timings: readonly Timing[],
-): Omit<BenchResult, 'code' | 'agreement' | 'rounds' | 'notes'> {
+): Omit<BenchResult, 'heldNs' | 'code' | 'agreement' | 'rounds' | 'notes'> {
   const figures = contestants.map(({ name, buildMs }, i): [BenchEngine, EngineFigures] => [
     name,
     { ...timings[i]!, buildMs: fiveDigits(buildMs) },

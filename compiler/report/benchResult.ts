@@ -72,6 +72,8 @@ export interface BenchResult {
     Record<'wasm' | 'bytecode' | 'reference', EngineFigures> &
       Partial<Record<BenchEngine, EngineFigures>>
   >;
+  /** Nanoseconds a cycle of `wasm`, in the best burst, where each row is held for 64 cycles. */
+  readonly heldNs: number;
   readonly code: CodeFigures;
   /** Measured by the command alone. */
   readonly firstAnswer?: FirstAnswer;

@@ -6,6 +6,10 @@ import type { Design } from '../compile.js';
 
 /** Words that stimulus and response take together, so that they stay in the second-level cache. */
 const BUFFER_WORDS = 1 << 15;
+
+/** Cycles for which each row is held where inputs hardly change. */
+export const HELD_CYCLES = 64;
+
 const FEWEST_ROWS = 64;
 const MOST_ROWS = 4096;
 
@@ -47,6 +51,16 @@ export class BenchRows {
     const start = performance.now();
     for (let left = cycles; left > 0; left -= this.count) {
       this.play(engine, 0, Math.min(left, this.count));
+    }
+    return (performance.now() - start) * 1e6;
+  }
+
+  /** The same with each row held for `HELD_CYCLES` cycles. */
+  timeHeld(engine: Engine, cycles: number): number {
+    const start = performance.now();
+    for (let left = cycles, row = 0; left > 0; left -= HELD_CYCLES, row = (row + 1) % this.count) {
+      const stimulus = this.stimulus.subarray(row * this.#stimulusStride);
+      engine.run(Math.min(left, HELD_CYCLES), stimulus, 0, this.#response);
     }
     return (performance.now() - start) * 1e6;
   }

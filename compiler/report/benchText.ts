@@ -1,5 +1,6 @@
 import { aligned, rate, shown } from './bench/columns.js';
 import type { BenchEngine, BenchResult, EngineFigures } from './benchResult.js';
+import { HELD_CYCLES } from './benchRows.js';
 
 const headings = [
   'engine',
@@ -24,6 +25,7 @@ export function benchText(result: BenchResult): string {
     ...aligned([headings, ...rows]),
     '',
     `Median of ${rounds} rounds, taken in turn, on the same random stimulus; best of short bursts.`,
+    heldLine(result),
     codeLine(result),
     ...firstAnswerLines(result),
     agreementLine(result),
@@ -47,6 +49,10 @@ function cellsOf(name: BenchEngine, figures: EngineFigures, timesWasm: number): 
 function agreementLine({ agreement }: BenchResult): string {
   const cycles = Object.entries(agreement).map(([name, count]) => `${count} (${name})`);
   return `Responses equal those of wasm in the cycles compared: ${cycles.join(', ')}.`;
+}
+
+function heldLine({ heldNs }: BenchResult): string {
+  return `With each row held for ${HELD_CYCLES} cycles, a cycle of wasm takes ${shown(heldNs)} ns.`;
 }
 
 function codeLine({ code, gates }: BenchResult): string {

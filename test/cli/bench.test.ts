@@ -49,6 +49,9 @@ describe('bench', () => {
   it('prints a table on stdout and nothing on stderr', async () => {
     const { stdout, stderr } = await bench(file('toggle.bench', toggle));
     expect(stdout).toMatch(/^toggle: 1 gates, 1 registers\n\nengine +ns\/cycle .*\nwasm /);
+    expect(stdout).toMatch(
+      /\nWith each row held for 64 cycles, a cycle of wasm takes [\d.]+ ns\.\n/,
+    );
     expect(stderr).toBe('');
     expect(process.exitCode).toBeUndefined();
   });

@@ -13,7 +13,15 @@ export function benchResult(
   );
   return {
     circuit,
-    ...{ gates: 100, registers: 10, cycles: 1000, ratios: {}, agreement: {}, rounds: 7 },
+    ...{
+      gates: 100,
+      registers: 10,
+      cycles: 1000,
+      heldNs: 2.5,
+      ratios: {},
+      agreement: {},
+      rounds: 7,
+    },
     engines: Object.fromEntries(figures),
     code: {
       ...{ operations: 120, vectorOperations: 0, bytes: 900 },

@@ -86,6 +86,7 @@ export function addQuietLoop(
   const parameters = [Local.Row, Local.RowStep, Local.Response, Local.ResponseStep];
   const lesser = (number: number, other: binaryen.ExpressionRef) =>
     module.select(i32.lt_u(get(number), other), get(number), module.copyExpression(other));
+  const eighth = i32.or(i32.shr_u(get(Local.Cycles), i32.const(3)), i32.const(1));
   const body = module.block(null, [
     local.set(Local.Count, lesser(Local.Pace, get(Local.Left))),
     ...(place.writes ? [global.set(WROTE, i32.const(0))] : []),
@@ -104,6 +105,8 @@ export function addQuietLoop(
   const whole = module.block(null, [
     local.set(Local.Left, get(Local.Cycles)),
     local.set(Local.Pace, global.get('pace', type)),
+    // Short calls must look too.
+    local.set(Local.Pace, lesser(Local.Pace, eighth)),
     module.block('done', [module.loop('cycles', body)]),
     global.set('pace', get(Local.Pace)),
     module.return(i32.sub(get(Local.Cycles), get(Local.Left))),

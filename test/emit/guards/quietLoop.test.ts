@@ -114,6 +114,19 @@ describe('a circuit at rest', () => {
     expect(engine.state()).toEqual(new Uint8Array(8));
   });
 
+  it('is noticed by short calls after a busy time', async () => {
+    const engine = await engineOf(design);
+    engine.run(
+      1000,
+      Uint32Array.from({ length: 1000 }, (_, i) => 1 | (i << 1)),
+      1,
+      undefined,
+    );
+    expect(engine.quietCycles).toBe(0);
+    for (let call = 0; call < 50; call++) engine.run(20, new Uint32Array([1]), 0, undefined);
+    expect(engine.quietCycles).toBeGreaterThan(800);
+  });
+
   it('is not where it writes to a memory', async () => {
     const counting = designOfText(`module t(input clk, input [3:0] at, output [7:0] y);
       reg [7:0] count [0:15];
