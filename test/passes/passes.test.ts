@@ -1,5 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
+import { cyclesOf } from '../../compiler/compile.js';
+import { Source } from '../../compiler/diagnostics/source.js';
 import { checkLogic } from '../../compiler/logic/check.js';
 import { type Logic, LogicOp } from '../../compiler/logic/logic.js';
 import { sinksOf } from '../../compiler/logic/sinks.js';
@@ -9,6 +11,7 @@ import { groupRegisters } from '../../compiler/passes/groupRegisters/groupRegist
 import { orderNodes } from '../../compiler/passes/orderNodes.js';
 import { orderSinks } from '../../compiler/passes/orderSinks.js';
 import { evaluateLogic, logicOf } from '../support/logic.js';
+import { designFrom } from '../support/ownCircuits.js';
 import { randomBanks } from '../support/randomBanks.js';
 import { randomCircuit } from '../support/randomCircuit.js';
 
@@ -108,6 +111,16 @@ describe('groupRegisters', () => {
       { seed: 43, numRuns: 90 },
     );
     expect(updates).toBeGreaterThan(150);
+  });
+
+  it('leaves few registers of a small circuit as they are', () => {
+    const updates = (width: number): number => {
+      const text = `module m(input clk, en, input [${width - 1}:0] d, output reg [${width - 1}:0] q);
+        always @(posedge clk) if (en) q <= d; endmodule`;
+      return groupRegisters(compact(cyclesOf(designFrom(new Source('m.v', text))).cycles[0]!))
+        .updates.length;
+    };
+    expect([updates(16), updates(64)]).toEqual([0, 4]);
   });
 });
 

@@ -12,6 +12,13 @@ import { type Placement, placeStates } from './placement.js';
 import { type Recipe, recipesOf } from './recipes.js';
 
 /**
+ * Operations that must be saved for the wait until what has been stored bit by bit can be loaded as
+ * a vector. Cycles of more than `SHORT` operations have other things to do meanwhile.
+ */
+const WAIT = 60;
+const SHORT = 400;
+
+/**
  * Lays state bits next to each other that change in the same way, and takes what they have in
  * common (an enable, a synchronous reset, a plain copy) out of their logic, so that sixteen of them
  * are updated in one step.
@@ -22,7 +29,7 @@ export function groupRegisters(logic: Logic): Logic {
   const placeOf = new Uint32Array(recipes.length);
   for (const [place, bit] of placement.entries()) if (bit >= 0) placeOf[bit] = place;
   const moved = { ...logic, a: movedStates(logic, placeOf) };
-  const updates = updatesOf(moved, recipes, placement);
+  const updates = worthwhile(moved, updatesOf(moved, recipes, placement));
   const isUpdated = new Uint8Array(placement.length);
   for (const { first } of updates) isUpdated.fill(1, first, first + UPDATE_WIDTH);
   const unused: LogicState = { role: 'unused', index: 0 };
@@ -39,6 +46,16 @@ export function groupRegisters(logic: Logic): Logic {
 
 function movedStates(logic: Logic, placeOf: Uint32Array): Uint32Array {
   return logic.a.map((a, node) => (logic.op[node] === LogicOp.State ? placeOf[a]! : a));
+}
+
+// Without the updates that wait for single bits, where they do not save enough.
+function worthwhile(logic: Logic, updates: readonly StateUpdate[]): readonly StateUpdate[] {
+  const operations = logic.op.reduce((sum, op) => sum + (op >= LogicOp.And ? 1 : 0), 0);
+  const saved = updates.reduce((sum, { from, enable, gate }) => {
+    const each = (enable === TRUE ? 0 : 3) + (gate === TRUE ? 0 : 1);
+    return from < 0 ? sum + UPDATE_WIDTH * each : sum;
+  }, 0);
+  return operations > SHORT || saved >= WAIT ? updates : updates.filter(({ from }) => from >= 0);
 }
 
 // An update starts where a stretch of bits of one recipe starts.

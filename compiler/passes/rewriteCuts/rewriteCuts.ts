@@ -15,6 +15,9 @@ const MOST_CUTS = 12;
 /** The same where the graph is larger than the budget. */
 const FEW_CUTS = 5;
 
+/** Larger graphs are left as they are: a round takes up to thirty microseconds a node. */
+const MOST_NODES = 150_000;
+
 /** Made at the first use: it takes some hundredths of a second. */
 let pricing: Pricing | undefined;
 
@@ -30,6 +33,7 @@ let pricing: Pricing | undefined;
  * again at the end. State bits, updates, outputs and their order stay.
  */
 export function rewriteCuts(logic: Logic): Logic {
+  if (logic.nodeCount > MOST_NODES) return logic;
   pricing ??= new Pricing(new Structures());
   const rounds = Math.max(1, Math.min(MOST_ROUNDS, Math.floor(BUDGET / logic.nodeCount)));
   let current = logic;
