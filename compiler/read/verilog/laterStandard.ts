@@ -80,7 +80,8 @@ export function laterSignHint(
   if (kind === Token.RightBracket && expected.startsWith("':' between")) {
     return hint('a size alone in brackets', 'write both ends, such as [0:3] for [4]');
   }
-  if (kind === Token.LeftBracket && expected.startsWith('the name')) {
+  const isSecond = kind === Token.LeftBracket && last.trimEnd().endsWith(']');
+  if (isSecond && expected.startsWith('the name')) {
     return hint('a second range in front of a name', 'put it behind the name, or make one range');
   }
   if (kind === Keyword.genvar) return hint('a genvar in a loop', 'declare it in front of the loop');

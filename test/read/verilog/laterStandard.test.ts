@@ -69,4 +69,16 @@ describe('a text of the later standard', () => {
     expect(diagnostics.list).toHaveLength(1);
     expect(diagnostics.list[0]!.message).toContain('give the argument wherever it is used');
   });
+
+  it('is none where something else is wrong', () => {
+    const vector =
+      'primitive p (o, a); output [1:0] o; input a; table 0 : 1; endtable endprimitive';
+    for (const text of [
+      vector,
+      'module t (input a b); endmodule',
+      'module t; s u (.a b); endmodule',
+    ]) {
+      expect([text, complaint('', text).message.includes('SystemVerilog')]).toEqual([text, false]);
+    }
+  });
 });
