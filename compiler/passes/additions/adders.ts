@@ -101,17 +101,29 @@ type Leaves = readonly [number, number, number];
 const isSame = (p: Leaves, q: Leaves): boolean => p[0] === q[0] && p[1] === q[1] && p[2] === q[2];
 
 function* halfAdders({ op, a, b, nodeCount }: Logic): Generator<Adder> {
-  const sums = new Map<number, number>();
-  const key = (p: Literal, q: Literal): number =>
-    Math.min(p >>> 1, q >>> 1) * nodeCount + Math.max(p >>> 1, q >>> 1);
+  // Exclusive-ors by what they read: the last one of each slot, and the one before it.
+  const slots = new Int32Array(2 ** Math.ceil(Math.log2(nodeCount + 1))).fill(-1);
+  const before = new Int32Array(nodeCount);
+  const slotOf = (node: number): number => {
+    const [p, q] = [a[node]! >>> 1, b[node]! >>> 1];
+    return (Math.imul(p + q, 0x9e3779b1) ^ Math.imul(p ^ q, 0x85ebca6b)) & (slots.length - 1);
+  };
   for (let node = 1; node < nodeCount; node++) {
-    if (op[node] === LogicOp.Xor) sums.set(key(a[node]!, b[node]!), node);
+    if (op[node] !== LogicOp.Xor) continue;
+    const slot = slotOf(node);
+    before[node] = slots[slot]!;
+    slots[slot] = node;
   }
-  for (let node = 1; node < nodeCount && sums.size > 0; node++) {
+  for (let node = 1; node < nodeCount; node++) {
     if (op[node] !== LogicOp.And) continue;
-    const sum = sums.get(key(a[node]!, b[node]!));
-    if (sum === undefined) continue;
-    const turned = (a[node]! ^ b[node]!) & 1;
-    yield { leaves: [a[node]!, b[node]!, FALSE], sum: sum * 2 + turned, carry: node * 2 };
+    const [p, q] = [a[node]! >>> 1, b[node]! >>> 1];
+    for (let sum = slots[slotOf(node)]!; sum >= 0; sum = before[sum]!) {
+      const [r, s] = [a[sum]! >>> 1, b[sum]! >>> 1];
+      if (!((p === r && q === s) || (p === s && q === r))) continue;
+      // The operands of an exclusive-or are not inverted.
+      const turned = (a[node]! ^ b[node]!) & 1;
+      yield { leaves: [a[node]!, b[node]!, FALSE], sum: sum * 2 + turned, carry: node * 2 };
+      break;
+    }
   }
 }

@@ -54,9 +54,12 @@ class CutFinder {
   readonly #count: Uint8Array;
   readonly #leaves: Uint32Array;
   readonly #tables: Uint8Array;
+  /** Per cut a bit for each of its leaves, perhaps one for several. */
+  readonly #marks: Uint32Array;
   // The cuts of the node at hand.
   readonly #own = new Uint32Array(64 * LEAVES);
   readonly #ownTables = new Uint8Array(64);
+  readonly #ownRanks = new Uint8Array(64);
   #ownCount = 0;
 
   constructor(logic: Logic) {
@@ -64,6 +67,7 @@ class CutFinder {
     this.#count = new Uint8Array(logic.nodeCount);
     this.#leaves = new Uint32Array(logic.nodeCount * MOST * LEAVES);
     this.#tables = new Uint8Array(logic.nodeCount * MOST);
+    this.#marks = new Uint32Array(logic.nodeCount * MOST);
   }
 
   visit(node: number, found: (node: number, cut: Cut) => void): void {
@@ -79,7 +83,9 @@ class CutFinder {
   #joinTwo(kind: number, p: Literal, q: Literal): void {
     const [left, right] = [p >>> 1, q >>> 1];
     for (let i = -1; i < this.#count[left]!; i++) {
+      const marks = this.#marksOf(left, i);
       for (let j = -1; j < this.#count[right]!; j++) {
+        if (areMany(marks | this.#marksOf(right, j))) continue;
         if (!this.#merge(left, i, right, j)) continue;
         const first = this.#tableOf(left, i) ^ -(p & 1);
         const second = this.#tableOf(right, j) ^ -(q & 1);
@@ -92,9 +98,11 @@ class CutFinder {
     const [s, z, o] = [select >>> 1, zero >>> 1, one >>> 1];
     for (let i = -1; i < this.#count[s]!; i++) {
       for (let j = -1; j < this.#count[z]!; j++) {
-        if (!this.#merge(s, i, z, j)) continue;
+        const marks = this.#marksOf(s, i) | this.#marksOf(z, j);
+        if (areMany(marks) || !this.#merge(s, i, z, j)) continue;
         const [l0, l1, l2] = this.#merged;
         for (let k = -1; k < this.#count[o]!; k++) {
+          if (areMany(marks | this.#marksOf(o, k))) continue;
           this.#merged[0] = l0;
           this.#merged[1] = l1;
           this.#merged[2] = l2;
@@ -106,6 +114,11 @@ class CutFinder {
         }
       }
     }
+  }
+
+  #marksOf(node: number, cut: number): number {
+    if (cut >= 0) return this.#marks[node * MOST + cut]!;
+    return node === 0 ? 0 : markOf(node);
   }
 
   readonly #merged: [number, number, number] = [0, 0, 0];
@@ -175,14 +188,16 @@ class CutFinder {
     own[at] = l0;
     own[at + 1] = l1;
     own[at + 2] = l2;
-    this.#ownTables[this.#ownCount++] = table;
+    this.#ownTables[this.#ownCount] = table;
+    this.#ownRanks[this.#ownCount] = this.#rank(this.#ownCount);
+    this.#ownCount++;
   }
 
   #keep(node: number, found: (node: number, cut: Cut) => void): void {
     let kept = 0;
     for (let rank = 0; rank < 4; rank++) {
       for (let i = 0; i < this.#ownCount; i++) {
-        if (this.#rank(i) !== rank) continue;
+        if (this.#ownRanks[i] !== rank) continue;
         const from = i * LEAVES;
         const table = this.#ownTables[i]!;
         if (rank === 0) {
@@ -191,7 +206,13 @@ class CutFinder {
         }
         if (kept === MOST) continue;
         const to = (node * MOST + kept) * LEAVES;
-        for (let k = 0; k < LEAVES; k++) this.#leaves[to + k] = this.#own[from + k]!;
+        let marks = 0;
+        for (let k = 0; k < LEAVES; k++) {
+          const leaf = this.#own[from + k]!;
+          this.#leaves[to + k] = leaf;
+          if (leaf !== NO_LEAF) marks |= markOf(leaf);
+        }
+        this.#marks[node * MOST + kept] = marks;
         this.#tables[node * MOST + kept++] = table;
       }
     }
@@ -204,6 +225,15 @@ class CutFinder {
     if (this.#own[i * LEAVES + 1] === NO_LEAF) return 1;
     return this.#own[i * LEAVES + 2] === NO_LEAF ? 2 : 3;
   }
+}
+
+const markOf = (leaf: number): number => 1 << (leaf & 31);
+
+// Whether more than three bits are 1.
+function areMany(marks: number): boolean {
+  let left = marks & (marks - 1);
+  left &= left - 1;
+  return (left & (left - 1)) !== 0;
 }
 
 // Per place of each leaf (two bits each, 0 for none) and truth table: the table over three leaves.
