@@ -159,6 +159,7 @@ export function reason(error: unknown): string {
   if (code === 'EEXIST') return 'there is a file of that name';
   if (code === 'EISDIR') return 'it is a directory';
   if (code === 'EACCES') return 'access is denied';
+  if (code === 'ENOSPC') return 'no space is left for it';
   return error instanceof Error ? error.message : String(error);
 }
 

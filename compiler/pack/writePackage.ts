@@ -50,7 +50,11 @@ export class PackageFolder {
 
   /** Writes a file of the package. */
   write(name: string, content: string | Uint8Array): void {
-    writeFileSync(join(this.path, name), content);
+    try {
+      writeFileSync(join(this.path, name), content);
+    } catch (error) {
+      throw Object.assign(error as Error, { path: join(this.#target, name) });
+    }
   }
 
   /** Puts the folder in the place of the target, all at once. */

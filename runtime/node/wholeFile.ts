@@ -20,6 +20,7 @@ import { basename, dirname, join } from 'node:path';
  * `finish`, `leave` or `discard` at the end. All methods throw what the file system throws.
  */
 export class WholeFile {
+  readonly #path: string;
   readonly #target: string;
   readonly #partial: string | undefined;
   #file: number | undefined;
@@ -30,6 +31,7 @@ export class WholeFile {
    * again. With `from`, such a file is cut to that length and continued.
    */
   constructor(path: string, mark = `${process.pid}`, from?: number) {
+    this.#path = path;
     const exists = existsSync(path);
     const isPlain = !exists || statSync(path).isFile();
     // Renaming onto a symbolic link would replace the link.
@@ -40,8 +42,7 @@ export class WholeFile {
       this.#file = openSync(this.#partial ?? this.#target, from === undefined ? 'w' : 'r+');
       if (from !== undefined) ftruncateSync(this.#file, from);
     } catch (error) {
-      // The user knows the file by the name given, not by that of the hidden one.
-      throw Object.assign(error as Error, { path });
+      throw this.#named(error);
     }
   }
 
@@ -56,7 +57,11 @@ export class WholeFile {
     const from = this.#partial === undefined ? undefined : this.#length;
     for (let done = 0; done < piece.length; ) {
       const at = from === undefined ? null : from + done;
-      done += writeSync(this.#file, piece, done, piece.length - done, at);
+      try {
+        done += writeSync(this.#file, piece, done, piece.length - done, at);
+      } catch (error) {
+        throw this.#named(error);
+      }
     }
     this.#length += piece.length;
   }
@@ -83,6 +88,11 @@ export class WholeFile {
   discard(): void {
     if (!this.#close()) return;
     if (this.#partial !== undefined) rmSync(this.#partial, { force: true });
+  }
+
+  // The user knows the file by the name given, not by that of the hidden one.
+  #named(error: unknown): Error {
+    return Object.assign(error as Error, { path: this.#path });
   }
 
   #close(): boolean {
