@@ -80,7 +80,7 @@ function circuitOf(inputWidths: readonly number[], recipes: readonly SumRecipe[]
       shown.push(...kept);
     }
     const tapped = carries[each.tap] ?? carries.at(-1)!;
-    if (each.tap < 1000) shown.push(tapped);
+    if (each.tap < 1000) shown.push(tapped, builder.gate(GateKind.And, p!));
   }
   const last = words.at(-1)!;
   const outputs = [...shown, ...last];

@@ -1,6 +1,8 @@
 import { FALSE, type Literal, type Logic, LogicOp, nodeOf, TRUE } from '../../logic/logic.js';
 import { shapesOf } from '../packWords/shapes.js';
 import { findAdders } from './adders.js';
+import type { Addition } from './addition.js';
+import { conjunctionsOf } from './conjunctions.js';
 import { type Network, networksOf, Uses } from './networks.js';
 import { topBit } from './topColumn.js';
 import { wordsOf } from './words.js';
@@ -10,19 +12,6 @@ export const WIDEST = 64;
 
 /** Networks of fewer adders are left alone. */
 const LEAST_ADDERS = 5;
-
-/**
- * Bits that are those of a sum: the numbers `words` and `constant` add up, but for multiples of
- * 2^width, to the number that `sum` makes.
- */
-export interface Addition {
-  readonly width: number;
-  /** Per number its bits, lowest first; `FALSE` where it has none. Other constants have been added. */
-  readonly words: readonly (readonly Literal[])[];
-  readonly constant: bigint;
-  /** Per bit its literal, or -1 where nothing reads it. */
-  readonly sum: readonly Literal[];
-}
 
 /**
  * Finds ripple adders, subtractors and counters, and trees of adders that end in one row of bits.
@@ -46,10 +35,11 @@ export function findAdditions(logic: Logic): Addition[] {
       if (literal >= 0) columnOf.set(nodeOf(literal), i * 4 * WIDEST + column);
     }
   }
-  return networks.flatMap((network) => {
+  const sums = networks.flatMap((network) => {
     const closed = closedNetwork(uses, network, shapes[2]!);
     return closed === undefined ? [] : [additionOf(logic, closed, shapes, columnOf)];
   });
+  return [...sums, ...conjunctionsOf(logic, sums)];
 }
 
 /** A network cut off above the columns that matter, each of which gives one bit. */

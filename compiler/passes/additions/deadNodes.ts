@@ -1,6 +1,6 @@
 import { type Logic, LogicOp, nodeOf } from '../../logic/logic.js';
 import { sinksOf } from '../../logic/sinks.js';
-import type { Addition } from './additions.js';
+import type { Addition } from './addition.js';
 
 /** Per node, 1 if nothing needs it once the bits of the sums are made by additions. */
 export function deadNodes(logic: Logic, additions: readonly Addition[]): Uint8Array {

@@ -1,5 +1,5 @@
 import { type Literal, type Logic, LogicOp, nodeOf } from '../../logic/logic.js';
-import type { Addition } from '../additions/additions.js';
+import type { Addition } from '../additions/addition.js';
 import { alignedOperands } from './alignment.js';
 import { islandsOf } from './islands.js';
 import { isOneNode, LANES, lanesOf, NO_NODE, Packs, summands, type Tuple } from './packs.js';

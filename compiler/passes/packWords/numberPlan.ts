@@ -1,6 +1,6 @@
 import { FALSE, type Literal, nodeOf } from '../../logic/logic.js';
 import { VectorOp } from '../../program/vectorCode.js';
-import type { Addition } from '../additions/additions.js';
+import type { Addition } from '../additions/addition.js';
 import { chunksOf, LANES, type Packs, type Tuple } from './packs.js';
 
 /** What number steps need of the plan that they are part of. */

@@ -8,7 +8,7 @@ import {
 } from '../../logic/logic.js';
 import { mapEffects } from '../../logic/sinks.js';
 import type { RowSink, VectorSink } from '../../program/vectorCode.js';
-import type { Addition } from '../additions/additions.js';
+import type { Addition } from '../additions/addition.js';
 import { growPacks } from './growPacks.js';
 import { LANES, type Packs, type Tuple } from './packs.js';
 import { savedPart } from './prices.js';

@@ -1,5 +1,5 @@
 import { FALSE, type Literal, type Logic, LogicOp, nodeOf } from '../../logic/logic.js';
-import type { Addition } from '../additions/additions.js';
+import type { Addition } from '../additions/addition.js';
 import { deadNodes } from '../additions/deadNodes.js';
 
 /** Lanes of a pack: the bytes of a 128-bit vector. */

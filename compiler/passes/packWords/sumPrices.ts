@@ -1,5 +1,5 @@
 import { FALSE, isInverted, LogicOp } from '../../logic/logic.js';
-import type { Addition } from '../additions/additions.js';
+import type { Addition } from '../additions/addition.js';
 import { Cost } from './cost.js';
 import { isFilled, sumOfWord } from './numberPlan.js';
 import { chunksOf, type Pack, type Packs, SUM } from './packs.js';
