@@ -1,4 +1,9 @@
+import { giveBack, SHORT, shortList } from './shortLists.js';
+
 const LONG = 4096;
+
+const noNumbers = new Uint32Array(0);
+const noBytes = new Uint8Array(0);
 
 // So many entries are copied at once, since that has a cost of its own. V8 also compiles a loop
 // that runs for long by itself, and falls out of that code at each later call of its function.
@@ -6,11 +11,13 @@ const MANY = 256;
 
 /** A list of unsigned 32-bit numbers that grows in place: four bytes an entry, no objects. */
 export class GrowableUint32 {
-  #data: Uint32Array;
+  // Many lists stay empty, so that there is no room before something is pushed.
+  #data: Uint32Array = noNumbers;
   #length = 0;
+  readonly #capacity: number;
 
   constructor(capacity = 64) {
-    this.#data = new Uint32Array(Math.max(capacity, 1));
+    this.#capacity = capacity;
   }
 
   get length(): number {
@@ -82,7 +89,7 @@ export class GrowableUint32 {
 
   /** Forgets all entries, and the room of a list that had become long. */
   clear(): void {
-    if (this.#data.length > LONG) this.#data = new Uint32Array(64);
+    if (this.#data.length > LONG) this.#data = noNumbers;
     this.#length = 0;
   }
 
@@ -92,23 +99,28 @@ export class GrowableUint32 {
   }
 
   #grow(needed: number): void {
-    this.#resize(Math.max(needed, this.#data.length * 2));
+    const { length } = this.#data;
+    this.#resize(Math.max(needed, length === 0 ? this.#capacity : 2 * length));
   }
 
   #resize(capacity: number): void {
-    const larger = new Uint32Array(capacity);
-    larger.set(this.#data.subarray(0, this.#length));
+    const old = this.#data;
+    const larger = capacity <= SHORT ? shortList(capacity) : new Uint32Array(capacity);
+    if (this.#length > MANY) larger.set(old.subarray(0, this.#length));
+    else for (let i = 0; i < this.#length; i++) larger[i] = old[i]!;
     this.#data = larger;
+    if (old.length > 0 && old.length <= SHORT) giveBack(old);
   }
 }
 
 /** The byte-sized sister of `GrowableUint32`. */
 export class GrowableUint8 {
-  #data: Uint8Array;
+  #data: Uint8Array = noBytes;
   #length = 0;
+  readonly #capacity: number;
 
   constructor(capacity = 64) {
-    this.#data = new Uint8Array(Math.max(capacity, 1));
+    this.#capacity = capacity;
   }
 
   get length(): number {
@@ -116,7 +128,9 @@ export class GrowableUint8 {
   }
 
   push(value: number): void {
-    if (this.#length === this.#data.length) this.reserve(this.#data.length * 2);
+    if (this.#length === this.#data.length) {
+      this.reserve(Math.max(this.#data.length * 2, this.#capacity, 1));
+    }
     this.#data[this.#length++] = value;
   }
 
@@ -144,6 +158,10 @@ export class GrowableUint8 {
 }
 
 // A copy takes time and, until the old list is gone, twice the memory; some unused room is cheaper.
+// That of a short list is part of a page.
 function fitting(data: Uint32Array | Uint8Array, length: number): Uint32Array | Uint8Array {
-  return length * 4 >= data.length * 3 ? data.subarray(0, length) : data.slice(0, length);
+  const isShort = data.length <= SHORT;
+  return !isShort && length * 4 >= data.length * 3
+    ? data.subarray(0, length)
+    : data.slice(0, length);
 }

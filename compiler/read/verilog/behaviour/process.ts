@@ -1,6 +1,7 @@
 import type { NetId } from '../../../circuit/ids.js';
 import type { Value } from '../../../circuit/values.js';
-import type { Elaboration, Scope } from '../scope.js';
+import type { Budget } from '../budget.js';
+import type { Scope } from '../scope.js';
 import type { Statement } from '../syntax.js';
 import { callFunction } from './calls.js';
 import { constantSink } from './constantSink.js';
@@ -26,16 +27,17 @@ export function buildingContext(scope: Scope, options?: StoreOptions): Context {
   return contextOf(scope, new Store(logic, options), 'all');
 }
 
-const expressionContexts = new WeakMap<Elaboration, Context>();
+/** By the budget, which a design has one of: one for each module would fill the memory. */
+const expressionContexts = new WeakMap<Budget, Context>();
 
 /** A context for one expression outside of procedures; the next call makes it void. */
 export function expressionContext(scope: Scope): Context {
   const { shared } = scope;
-  let context = expressionContexts.get(shared);
+  let context = expressionContexts.get(shared.budget);
   if (context?.scope !== scope) {
     // A module may have a hundred thousand scopes, of which each has few expressions.
-    context = context === undefined ? buildingContext(scope) : { ...context, scope };
-    expressionContexts.set(shared, context);
+    context = context?.scope.shared === shared ? { ...context, scope } : buildingContext(scope);
+    expressionContexts.set(shared.budget, context);
   }
   // Netlists are full of tiny assignments, so that making a context would take most of the time.
   context.logic.clear();
@@ -62,18 +64,23 @@ export function runClocked(body: Statement, context: Context, options: StoreOpti
 }
 
 /** Contexts for constants, one for each that is being worked out inside of another. */
-const constantContexts = new WeakMap<Elaboration, { used: number; readonly list: Context[] }>();
+interface ConstantContexts {
+  used: number;
+  readonly list: Context[];
+}
+
+const constantContexts = new WeakMap<Budget, ConstantContexts>();
 
 /**
  * Works something out in a context in which all is constant: no signal may be read. The context is
  * void afterwards.
  */
 export function withConstants<T>(scope: Scope, work: (context: Context) => T): T {
-  const { shared } = scope;
-  let known = constantContexts.get(shared);
+  const { budget } = scope.shared;
+  let known = constantContexts.get(budget);
   if (known === undefined) {
     known = { used: 0, list: [] };
-    constantContexts.set(shared, known);
+    constantContexts.set(budget, known);
   }
   const { used, list } = known;
   let context = list[used];
@@ -87,9 +94,11 @@ export function withConstants<T>(scope: Scope, work: (context: Context) => T): T
   known.used++;
   context.store.clear();
   context.blocks.clear();
-  const result = work(context);
-  known.used = used;
-  return result;
+  try {
+    return work(context);
+  } finally {
+    known.used = used;
+  }
 }
 
 /** A context for power-up: `outside` gives the values that variables have so far. */

@@ -1,0 +1,39 @@
+const PAGE = 4096;
+
+/** From this length on, a list has an array buffer of its own. */
+export const SHORT = 1024;
+
+// So many lists of each length are kept for others, so that these do not hold on to many pages.
+const MOST_KEPT = 64;
+
+let page = new ArrayBuffer(0);
+let used = 0;
+
+/** Lists that are no longer in use, by the logarithm of their length. */
+const kept: Uint32Array[][] = Array.from({ length: 32 - Math.clz32(SHORT) }, () => []);
+
+/**
+ * An array for at least `least` numbers, `SHORT` of them at most, whatever stands in it.
+ *
+ * It is a stretch of a page that many of them share: a design may have a million of them, and an
+ * array buffer for each would cost far more than what it holds.
+ */
+export function shortList(least: number): Uint32Array {
+  const logarithm = 32 - Math.clz32(Math.max(least, 4) - 1);
+  const again = kept[logarithm]!.pop();
+  if (again !== undefined) return again;
+  const length = 1 << logarithm;
+  if (used + 4 * length > page.byteLength) {
+    page = new ArrayBuffer(4 * PAGE);
+    used = 0;
+  }
+  const list = new Uint32Array(page, used, length);
+  used += 4 * length;
+  return list;
+}
+
+/** Gives back what `shortList` made. */
+export function giveBack(list: Uint32Array): void {
+  const lists = kept[31 - Math.clz32(list.length)]!;
+  if (lists.length < MOST_KEPT) lists.push(list);
+}
