@@ -8,10 +8,8 @@ import { X } from './values.js';
 const EFFORT = 4;
 const LEAST_EFFORT = 1_000_000;
 
-/** Inputs beside which a second one is tried. */
-const FIRST_INPUTS = 4;
-
-const RESET_NAME = /re?se?t|clr|clear|init|por/i;
+/** How resets are called, whatever stands before and behind: `rst_n`, `sys_reset`, `clrb`, `arst0`. */
+const RESET_NAME = /(?:^|[_./[])n?[as]?(?:re?se?t|rst|clr|clear)(?:$|[^a-z]|[nbi](?:$|[^a-z]))/i;
 
 /** What `openStarts` looks at. */
 interface Clocked {
@@ -23,8 +21,9 @@ const known = new WeakMap<Circuit, Uint32Array>();
 
 /**
  * The registers whose start is left open: they have neither an initial value nor a set or reset,
- * and no input, held at a level, brings them to a known value while all else is unknown, nor do two
- * inputs of which one decides much. The search is cut off by its effort, so that it is linear.
+ * and no synchronous reset either, which is an input with the name of one that brings them to a
+ * known value, whatever all else is, when it is held at its active level, if need be beside another
+ * input at one level (as a scan enable). The search is cut off by its effort, so that it is linear.
  * Worked out once for each circuit.
  */
 export function openStarts(design: Clocked): Uint32Array {
@@ -45,50 +44,54 @@ function findOpenStarts({ circuit, clocks }: Clocked): Uint32Array {
   return Uint32Array.from(registers.output.keys()).filter((r) => open.has(registers.output[r]!));
 }
 
-/** Takes outputs of registers out of `open` that inputs bring to a known value. */
+/** Takes outputs of registers out of `open` that synchronous resets bring to a known value. */
 function searchResets(circuit: Circuit, clocks: ClockPorts, open: Set<number>): void {
   const held = new HeldInputs(
     circuit,
     clocks.ports.map(({ net }) => net),
   );
   const effort = Math.max(LEAST_EFFORT, EFFORT * (circuit.netCount + circuit.fanin.length));
-  const goesOn = (): boolean => open.size > 0 && held.work < effort;
-  const inputs = likelyFirst(circuit, clocks);
-  /** Tries all inputs at both levels, and tells how many nets each level makes known. */
-  const tryAll = (visit?: (input: number, level: number, count: number) => void): void => {
-    for (const input of inputs) {
-      for (let level = 0; level <= 1 && goesOn(); level++) {
-        const before = held.count;
-        held.hold(input, level);
-        for (const net of held.knownSince(before)) open.delete(net);
-        visit?.(input, level, held.count - before);
-        held.release(before);
-      }
-    }
-  };
-  for (const net of held.knownSince(0)) open.delete(net);
-  const tried: { input: number; level: number; count: number }[] = [];
-  tryAll((input, level, count) => tried.push({ input, level, count }));
-  tried.sort((a, b) => b.count - a.count);
-  for (const { input, level } of tried.slice(0, FIRST_INPUTS)) {
+  /** What holding an input at a level makes known; `visit` looks on meanwhile. */
+  const madeKnown = (input: number, level: number, visit?: () => void): Set<number> => {
     const before = held.count;
     held.hold(input, level);
-    tryAll();
+    const known = new Set(held.knownSince(before));
+    visit?.();
     held.release(before);
+    return known;
+  };
+  const close = (known: Iterable<number>): void => {
+    for (const net of known) open.delete(net);
+  };
+  close(held.knownSince(0));
+  const inputs = dataInputs(circuit, clocks);
+  const openNow = (known: Set<number>): number[] => [...known].filter((net) => open.has(net));
+  for (const { net: reset } of inputs.filter(({ name }) => RESET_NAME.test(name))) {
+    const level = Number(madeKnown(reset, 1).size > madeKnown(reset, 0).size);
+    close(madeKnown(reset, level));
+    for (const { net } of inputs) {
+      for (const other of [0, 1]) {
+        if (open.size === 0 || held.work > effort) return;
+        let both: number[] = [];
+        madeKnown(reset, level, () => {
+          both = openNow(madeKnown(net, other));
+        });
+        if (both.length === 0) continue;
+        // What follows without the reset, or whatever the other input is, is data that passes.
+        const alone = madeKnown(net, other);
+        madeKnown(reset, level, () => {
+          const otherwise = madeKnown(net, 1 - other);
+          close(both.filter((each) => !alone.has(each) && !otherwise.has(each)));
+        });
+      }
+    }
   }
 }
 
-/** The input bits that are no clocks, those with the name of a reset first. */
-function likelyFirst({ inputs }: Circuit, { ports }: ClockPorts): number[] {
+/** The input bits that are no clocks. */
+function dataInputs({ inputs }: Circuit, { ports }: ClockPorts): { net: number; name: string }[] {
   const clocks = new Set<number>(ports.map(({ net }) => net));
-  const bits = inputs.flatMap((port) =>
-    Array.from(port.nets, (net, bit) => ({
-      net,
-      isReset: RESET_NAME.test(portBitName(port, bit)),
-    })),
-  );
-  const data = bits.filter(({ net }) => !clocks.has(net));
-  return [...data.filter(({ isReset }) => isReset), ...data.filter(({ isReset }) => !isReset)].map(
-    ({ net }) => net,
-  );
+  return inputs
+    .flatMap((port) => Array.from(port.nets, (net, bit) => ({ net, name: portBitName(port, bit) })))
+    .filter(({ net }) => !clocks.has(net));
 }

@@ -251,7 +251,6 @@ function warnOfStart(design: Design): void {
   if (length === 0) return;
   process.stderr.write(
     `warning: ${length} of ${design.circuit.registers.count} registers have neither an initial ` +
-      'value nor a set or reset, and no held input makes them known; they start at 0. ' +
-      'Choose with --power-up. [register-no-start]\n',
+      'value nor a set or reset; they start at 0. Choose with --power-up. [register-no-start]\n',
   );
 }

@@ -78,7 +78,7 @@ export const codeTable = {
     'Nothing, where a pulse is meant; a run without delays cannot show that it is long enough.',
   ),
   'register-no-start': warning(
-    'Registers have neither an initial value nor a set or reset, and no held input makes them known.',
+    'Registers have neither an initial value nor a set or reset.',
     'Give them one, or choose --power-up.',
   ),
 

@@ -50,7 +50,18 @@ describe('registers whose start is left open', () => {
       'reg r; always @(posedge clk) begin r <= rst; if (r) q <= 1; else q <= q + d; end',
       '0000',
     ],
-    ['none of a shift register', 'always @(posedge clk) q <= {q[2:0], si};', '0000'],
+    ['all of a shift register', 'always @(posedge clk) q <= {q[2:0], si};', '1111'],
+    ['those that take data', 'always @(posedge clk) q <= d;', '1111'],
+    [
+      'those that an input clears which is no reset',
+      'always @(posedge clk) q <= q & {4{en}};',
+      '1111',
+    ],
+    [
+      'those that only take data while others are reset',
+      'reg r; always @(posedge clk) begin r <= !rst & ~r; q <= {q[2:0], si}; end',
+      '1111',
+    ],
     [
       'none with a scan path before the reset',
       "always @(posedge clk) q <= scan ? {q[2:0], q[3] ^ si} : rst ? 4'd0 : q + 1;",
@@ -60,6 +71,11 @@ describe('registers whose start is left open', () => {
       'those that another one enables',
       'reg g; always @(posedge clk) begin g <= ~g; if (g) q <= d; end',
       '1111',
+    ],
+    [
+      'none with a scan path before a reset that is active at 0',
+      "always @(posedge clk) q <= !scan ? {q[2:0], q[3] ^ si} : !rst ? 4'd0 : q + 1;",
+      '0000',
     ],
     [
       'none behind a gated clock that one input opens and another resets',

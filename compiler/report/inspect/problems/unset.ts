@@ -9,8 +9,7 @@ export function findUnset({ design, words, diagnostics }: ProblemContext): void 
   if (unset.length === 0) return;
   const message =
     `${figure(unset.length)} of ${counted(count, 'register')} ` +
-    `${unset.length === 1 ? 'has' : 'have'} neither an initial value nor a set or reset, ` +
-    `and no held input makes ${unset.length === 1 ? 'it' : 'them'} known: ` +
+    `${unset.length === 1 ? 'has' : 'have'} neither an initial value nor a set or reset: ` +
     words.list(unset);
   diagnostics.add('register-no-start', message, words.span(unset[0]!));
 }
