@@ -35,11 +35,11 @@ export function buildCell(cell: LibertyCell, recording: Recording, report: CellR
     } else if (value === undefined) driveUnknown(build, pin, net);
     else drivePin(build, pin, net, value);
   }
-  const { isRead } = usageOf(recording, new Children(), []);
+  const usage = usageOf(recording, new Children(), []);
   reportSilent(
     build,
     // Nobody misses an internal pin that no function names.
-    silent.filter((pin) => pin.direction !== 'internal' || isRead[netOf(build, pin)] === 1),
+    silent.filter((pin) => pin.direction !== 'internal' || usage.isRead(netOf(build, pin))),
   );
   return { pins: build.nets.pins, boundary: build.nets.boundary, states };
 }

@@ -72,7 +72,7 @@ function withoutSupplies(
   let unused = pruned;
   for (const [index, { direction }] of cell.pins.entries()) {
     const net = pins[index]!;
-    if (direction !== 'supply' || usage.isRead[net] === 1) continue;
+    if (direction !== 'supply' || usage.isRead(net)) continue;
     unused ??= new Uint8Array(netCount);
     unused[net] = 1;
   }

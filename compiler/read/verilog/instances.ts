@@ -80,7 +80,7 @@ export class InstanceTable {
   readonly #start = new GrowableUint32();
   readonly #connection = new GrowableUint32();
   readonly #bits = new GrowableUint32();
-  readonly #extras = new Map<number, InstanceExtras>();
+  #extras: Map<number, InstanceExtras> | undefined;
   readonly expressions: Expression[] = [];
   readonly #fractionRead: () => number;
   /** What had been read before the first instance. */
@@ -103,7 +103,10 @@ export class InstanceTable {
   begin(module: number, name: NameId, position: Position, extras?: InstanceExtras): number {
     if (this.#module.length === 0) this.#fractionBefore = this.#fractionRead();
     if (this.#connectionCount >= this.#reserved) this.#reserve();
-    if (extras !== undefined) this.#extras.set(this.#module.length, extras);
+    if (extras !== undefined) {
+      this.#extras ??= new Map();
+      this.#extras.set(this.#module.length, extras);
+    }
     this.#module.push(module >>> 0);
     this.#name.push(name);
     this.#position.push(position);
@@ -154,7 +157,7 @@ export class InstanceTable {
   }
 
   extras(instance: number): InstanceExtras | undefined {
-    return this.#extras.get(instance);
+    return this.#extras?.get(instance);
   }
 
   connectionStart(instance: number): number {

@@ -14,7 +14,7 @@ const STRIDE = 3;
  */
 export class PlainNames implements Iterable<DeclaredName> {
   readonly #columns = new GrowableUint32(4 * STRIDE);
-  readonly #others = new Map<number, DeclaredName>();
+  #others: Map<number, DeclaredName> | undefined;
 
   get length(): number {
     return this.#columns.length / STRIDE;
@@ -30,6 +30,7 @@ export class PlainNames implements Iterable<DeclaredName> {
   /** Adds any declared name. */
   push(declared: DeclaredName): void {
     if (declared.dimensions.length > 0 || declared.value !== undefined) {
+      this.#others ??= new Map();
       this.#others.set(this.length, declared);
     }
     this.pushPlain(declared.name, declared.start, declared.end);
@@ -42,7 +43,7 @@ export class PlainNames implements Iterable<DeclaredName> {
   ): void {
     const columns = this.#columns;
     for (let i = 0; i < columns.length; i += STRIDE) {
-      const more = this.#others.size > 0 ? this.#others.get(i / STRIDE) : undefined;
+      const more = this.#others?.get(i / STRIDE);
       if (more !== undefined) other(more);
       else plain(columns.get(i), columns.get(i + 1), columns.get(i + 2));
     }
@@ -51,7 +52,7 @@ export class PlainNames implements Iterable<DeclaredName> {
   *[Symbol.iterator](): Iterator<DeclaredName> {
     const columns = this.#columns;
     for (let i = 0; i < columns.length; i += STRIDE) {
-      const other = this.#others.get(i / STRIDE);
+      const other = this.#others?.get(i / STRIDE);
       yield other ?? {
         name: columns.get(i),
         dimensions: NO_DIMENSIONS,

@@ -8,7 +8,7 @@ import { expressionContext, withConstants } from './process.js';
 import { realConstant } from './realConstant.js';
 import { report } from './report.js';
 import { targetPieces } from './targets.js';
-import { constantIn } from './widths.js';
+import { constantIn, plainNumber } from './widths.js';
 
 export { lowerAlways } from './always.js';
 export { isPureFunction } from './constantCalls.js';
@@ -24,7 +24,9 @@ export { isBare, walk } from './walk.js';
 export function evaluateConstant(expression: Expression, scope: Scope): Constant | undefined {
   scope.shared.budget.begin(expression);
   return (
-    realConstant(expression) ?? withConstants(scope, (context) => constantIn(expression, context))
+    plainNumber(expression) ??
+    realConstant(expression) ??
+    withConstants(scope, (context) => constantIn(expression, context))
   );
 }
 

@@ -23,6 +23,9 @@ export const MAX_WIDTH = 65536;
 
 const STEPS_OF_CONSTANT = 4;
 
+/** The greatest number that has room in 32 bits whatever its sign. */
+const MOST_SHORT = 0x7fff_ffffn;
+
 /** The widest concatenation, which is as wide as vectors are declared at most. */
 const MAX_VECTOR = 1 << 20;
 
@@ -128,6 +131,7 @@ function shapeOfOther(node: Expression, context: Context): Shape {
 
 /** 32 bits, or as many as a larger number needs to keep its value (clause 3.5.1). */
 export function unsizedWidth(node: Extract<Expression, { kind: 'number' }>): number {
+  if (node.value <= MOST_SHORT && node.unknown === 0n) return 32;
   const bits = (node.value | node.unknown).toString(2).length;
   return Math.max(32, node.signed ? bits + 1 : bits);
 }
@@ -227,13 +231,17 @@ export function constantIn(expression: Expression, context: Context): Constant |
   return undefined;
 }
 
+/** The value of a number as it is written, if x or z does not fill it up; undefined for all else. */
+export function plainNumber(expression: Expression): Constant | undefined {
+  if (expression.kind !== 'number' || expression.extends !== 'zero') return undefined;
+  const { value, unknown, signed } = expression;
+  const width = expression.width ?? unsizedWidth(expression);
+  return { width, signed, value: unknown === 0n ? value : value & ~unknown, unknown };
+}
+
 // Most constants are a plain number or parameter; they need no nets.
 function quickValue(expression: Expression, context: Context): Constant | undefined {
-  if (expression.kind === 'number' && expression.extends === 'zero') {
-    const { value, unknown, signed } = expression;
-    const width = expression.width ?? unsizedWidth(expression);
-    return { width, signed, value: value & ~unknown, unknown };
-  }
+  if (expression.kind === 'number') return plainNumber(expression);
   if (expression.kind !== 'name') return undefined;
   const binding = bindingOf(expression, context);
   return binding?.kind === 'parameter' ? binding.value : undefined;

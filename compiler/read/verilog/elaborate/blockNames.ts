@@ -62,9 +62,8 @@ class NameCollector {
     const isSigned = (flags & Flag.Signed) !== 0;
     if (!isVector && !isSigned && text === undefined) signals.pushScalar(symbols.name(symbol));
     else {
-      const range = { msb: symbols.msb(symbol), lsb: symbols.lsb(symbol), isVector };
-      const shape = isSigned ? { ...range, isSigned } : range;
-      signals.push(symbols.name(symbol), shape, text);
+      const [msb, lsb] = [symbols.msb(symbol), symbols.lsb(symbol)];
+      signals.push(symbols.name(symbol), { msb, lsb, isVector, isSigned, name: text });
     }
     for (let at = offset; at < signals.bits; at++) nets[at] = this.#find(first + at - offset);
   }

@@ -85,7 +85,7 @@ export class ModuleBody implements OuterHost {
   /** First child of each instance of a module or primitive, by the value of its symbol. */
   readonly placed = new GrowableUint32(2);
   /** Length of the instances that are arrays, by the value of their symbol. */
-  readonly arrayLengths = new Map<number, number>();
+  arrayLengths: Map<number, number> | undefined;
   /** Drivers of the recording that hand on a net as it is: z too, where that net is a bus. */
   readonly copies = new GrowableUint32(2);
 
@@ -246,7 +246,7 @@ export class ModuleBody implements OuterHost {
 
   /** How many children an instance has. */
   arrayLength(instance: number): number {
-    return this.arrayLengths.get(instance) ?? 1;
+    return this.arrayLengths?.get(instance) ?? 1;
   }
 
   /** The word that stands at a position: its start and end. */

@@ -17,6 +17,12 @@ export interface MemoryImport {
   readonly memory: HeldMemory;
 }
 
+/** A net of a child. */
+interface ReachedNet {
+  readonly child: number;
+  readonly childNet: NetId;
+}
+
 // What an instance takes in the columns below, its ports aside.
 const NUMBERS_OF_CHILD = 6;
 
@@ -36,9 +42,10 @@ export class Children {
   readonly #offset = new GrowableUint32(2);
   readonly #portStart = new GrowableUint32(2);
   readonly #ports = new GrowableUint32(8);
-  readonly #imports = new Map<number, Import[]>();
-  readonly #memories = new Map<number, MemoryImport[]>();
-  readonly #reached = new Map<NetId, { readonly child: number; readonly childNet: NetId }>();
+  // Few modules have any of these.
+  #imports: Map<number, Import[]> | undefined;
+  #memories: Map<number, MemoryImport[]> | undefined;
+  #reached: Map<NetId, ReachedNet> | undefined;
 
   /** `budget` keeps the list from becoming too long, where that is not sure anyway. */
   constructor(budget?: Budget) {
@@ -106,18 +113,18 @@ export class Children {
       const net = this.#ports.get(i);
       if (net !== NO_NET) visit(netId(net));
     }
+    if (this.#imports === undefined) return;
     for (const imports of this.#imports.values()) for (const { net } of imports) visit(net);
   }
 
   /** Whether any child has imports. */
   get hasImports(): boolean {
-    return this.#imports.size > 0;
+    return this.#imports !== undefined;
   }
 
   /** Nets of the child that hierarchical names make one with nets of the parent. */
   imports(child: number): readonly Import[] {
-    if (this.#imports.size === 0) return noImports;
-    return this.#imports.get(child) ?? noImports;
+    return this.#imports?.get(child) ?? noImports;
   }
 
   /**
@@ -130,19 +137,25 @@ export class Children {
       if (known !== NO_NET) return known;
       const net = make();
       this.setPort(child, place, net);
-      this.#reached.set(net, { child, childNet });
+      this.#noteReached(net, { child, childNet });
       return net;
     }
     const known = this.imports(child).find((each) => each.childNet === childNet);
     if (known !== undefined) return known.net;
     const net = make();
     this.adopt(child, childNet, net);
-    this.#reached.set(net, { child, childNet });
+    this.#noteReached(net, { child, childNet });
     return net;
+  }
+
+  #noteReached(net: NetId, inside: ReachedNet): void {
+    this.#reached ??= new Map();
+    this.#reached.set(net, inside);
   }
 
   /** Lets a net of the child that is no port be one with a net of the parent. */
   adopt(child: number, childNet: NetId, net: NetId): void {
+    this.#imports ??= new Map();
     const imports = this.#imports.get(child);
     if (imports === undefined) this.#imports.set(child, [{ childNet, net }]);
     else imports.push({ childNet, net });
@@ -150,7 +163,7 @@ export class Children {
 
   /** Memories of the child that hierarchical names make one with memories of the parent. */
   memoryImports(child: number): readonly MemoryImport[] {
-    return this.#memories.get(child) ?? noMemories;
+    return this.#memories?.get(child) ?? noMemories;
   }
 
   /** The parent's memory that is one with a memory of the child; made by `make` when first asked for. */
@@ -164,13 +177,14 @@ export class Children {
 
   /** Lets a memory of the child be one with a memory of the parent. */
   adoptMemory(child: number, childMemory: number, memory: HeldMemory): void {
+    this.#memories ??= new Map();
     const imports = this.#memories.get(child);
     if (imports === undefined) this.#memories.set(child, [{ childMemory, memory }]);
     else imports.push({ childMemory, memory });
   }
 
   /** The net of a child for which a net of the parent was made by a hierarchical name. */
-  reached(net: NetId): { readonly child: number; readonly childNet: NetId } | undefined {
-    return this.#reached.get(net);
+  reached(net: NetId): ReachedNet | undefined {
+    return this.#reached?.get(net);
   }
 }

@@ -25,13 +25,13 @@ export function compileModule(
   overrides: Overrides,
   outer: Outer | undefined,
 ): Template {
-  const inRegisters = new Set(design.inRegisters);
+  let { inRegisters } = design;
   for (;;) {
     try {
       return compileWith(new ModuleBody(design, module, outer, inRegisters), overrides);
     } catch (error) {
       if (!(error instanceof NeedsRegisters) || error.isFar) throw error;
-      inRegisters.add(error.position);
+      inRegisters = new Set([...inRegisters, error.position]);
     }
   }
 }

@@ -15,7 +15,7 @@ import { fuseBuffers } from './fuseBuffers.js';
 import type { Boundary } from './ports.js';
 import { pruneUnused } from './pruning.js';
 import { Drive, type Repeat, type Template } from './template.js';
-import { reportUndriven } from './undriven.js';
+import { mayBeUndriven, reportUndriven } from './undriven.js';
 import { type Usage, usageOf, usesOf } from './usage.js';
 import { valueNamesOf } from './valueNames.js';
 
@@ -29,7 +29,8 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
   const defaults = driveDefaults(body, usage, boundary);
   const canonical = fuseBuffers(builder, usage);
   const find = (net: number): number => canonical?.[net] ?? net;
-  const nets = Uint32Array.from(boundary.nets, find);
+  const nets = new Uint32Array(boundary.nets.length);
+  for (let place = 0; place < nets.length; place++) nets[place] = find(boundary.nets[place]!);
   const outerNets = [...body.outerNets].map(([outside, net]) => ({
     net: netId(find(net)),
     outside,
@@ -64,7 +65,9 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
   };
   const { driven } = design;
   markDriven(body, usage);
-  design.atEnd(() => reportUndriven(body, usage, boundary, (net) => driven.has(template, net)));
+  if (mayBeUndriven(body, usage, boundary)) {
+    design.atEnd(() => reportUndriven(body, usage, (net) => driven.has(template, net)));
+  }
   return template;
 }
 
@@ -114,8 +117,11 @@ function countUsage(body: ModuleBody, classes: NetClasses): Usage {
   return handOnFloating(body, usage) ? count() : usage;
 }
 
+const noRepeats: readonly Repeat[] = [];
+
 /** The places of a boundary where a net stands that stood before. */
-function repeatsOf(boundary: Uint32Array): Repeat[] {
+function repeatsOf(boundary: Uint32Array): readonly Repeat[] {
+  if (isAscending(boundary)) return noRepeats;
   const repeats: Repeat[] = [];
   const firstPlace = new Map<number, number>();
   boundary.forEach((net, second) => {
@@ -124,4 +130,9 @@ function repeatsOf(boundary: Uint32Array): Repeat[] {
     else repeats.push({ first, second });
   });
   return repeats;
+}
+
+function isAscending(list: Uint32Array): boolean {
+  for (let i = 1; i < list.length; i++) if (list[i]! <= list[i - 1]!) return false;
+  return true;
 }

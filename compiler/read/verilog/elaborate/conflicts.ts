@@ -13,14 +13,16 @@ import type { Usage } from './usage.js';
 /** Reports nets with several drivers, unless `wand` or `wor` resolves them (clause 4.6.3). */
 export function checkConflicts(body: ModuleBody, usage: Usage, classes: NetClasses): void {
   const conflicts = new Map<number, Origin[]>();
-  usage.drivers.forEach((count, net) => {
+  for (let net = 0; net < usage.netCount; net++) {
+    const count = usage.drivers(net);
+    if (count === 0) continue;
     const netClass = classes.get(net);
     const isSupply = netClass === NetClass.Supply0 || netClass === NetClass.Supply1;
     const limit = isSupply ? 0 : 1;
     if (count > limit && !isWired(netClass)) {
       conflicts.set(net, isSupply ? [body.builder.netOrigin(net)] : []);
     }
-  });
+  }
   const several = severalDriven(body, usage);
   for (const net of several) conflicts.set(net, []);
   if (conflicts.size === 0) return;
@@ -28,16 +30,19 @@ export function checkConflicts(body: ModuleBody, usage: Usage, classes: NetClass
   reportConflicts(body, conflicts);
 }
 
+const none: ReadonlySet<number> = new Set();
+
 /** Variables that several processes drive, or a process and something else; z or not is no matter. */
-function severalDriven(body: ModuleBody, usage: Usage): Set<number> {
+function severalDriven(body: ModuleBody, usage: Usage): ReadonlySet<number> {
   const { builder, floatingVariables, copiedVariables } = body;
+  if (floatingVariables.length === 0 && copiedVariables.length === 0) return none;
   const driven = new Set<number>();
   const several = new Set<number>();
   // A copy of a net that is never z has stayed a gate.
-  const copied = copiedVariables.filter((net) => usage.drivers[builder.find(net)] === 0);
+  const copied = copiedVariables.filter((net) => usage.drivers(builder.find(net)) === 0);
   for (const variable of [...floatingVariables, ...copied]) {
     const net = builder.find(variable);
-    if (driven.has(net) || usage.drivers[net]! > 0) several.add(net);
+    if (driven.has(net) || usage.drivers(net) > 0) several.add(net);
     driven.add(net);
   }
   return several;

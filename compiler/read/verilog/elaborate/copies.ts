@@ -22,9 +22,9 @@ export function handOnFloating({ builder, copies }: ModuleBody, usage: Usage): b
   const isAny = pending.length > 0;
   for (let driver = pending.pop(); driver !== undefined; driver = pending.pop()) {
     const output = builder.find(builder.driverOutput(driver));
-    const isOnlyGate = builder.driverKind(driver) !== BUS_PART && usage.drivers[output] === 1;
+    const isOnlyGate = builder.driverKind(driver) !== BUS_PART && usage.drivers(output) === 1;
     makeCopy(builder, driver);
-    if (!isOnlyGate && usage.drivers[output] !== 0) continue;
+    if (!isOnlyGate && usage.drivers(output) !== 0) continue;
     pending.push(...(byData.get(output) ?? []));
     byData.delete(output);
   }

@@ -45,7 +45,7 @@ export function driveSupplies({ builder }: ModuleBody, classes: NetClasses): voi
 /** Counts what the type of a net does to it. */
 export function countTypes(usage: Usage, classes: NetClasses): void {
   for (const [net, netClass] of classes) {
-    if (isWired(netClass)) usage.wired.add(net);
+    if (isWired(netClass)) usage.allowSeveral(net);
     else if (netClass === NetClass.Pull0 || netClass === NetClass.Pull1) {
       usage.drive(netId(net), Drive.Weak);
     }
@@ -68,14 +68,16 @@ export function netTypesOf(
   );
 }
 
+const none: ReadonlySet<number> = new Set();
+
 /** Gives a variable that nothing assigns its value at power-up; returns the drivers that do. */
 export function driveDefaults(
   { builder, initialValues, outerNets }: ModuleBody,
   usage: Usage,
   boundary: Boundary,
 ): ReadonlySet<number> {
+  if (initialValues.size === 0) return none;
   const drivers = new Set<number>();
-  if (initialValues.size === 0) return drivers;
   const outside = drivenOutside(builder, boundary);
   for (const net of outerNets.values()) outside.add(builder.find(net));
   for (const [net, value] of initialValues) {

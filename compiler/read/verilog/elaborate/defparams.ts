@@ -7,6 +7,8 @@ import { numberOf } from './constants.js';
 import type { DeepOverride, Overrides } from './overrides.js';
 import { SymbolKind } from './symbols.js';
 
+const none: ReadonlyMap<number, Overrides> = new Map();
+
 interface Collected {
   readonly values: Map<NameId, Constant>;
   readonly deep: DeepOverride[];
@@ -20,6 +22,7 @@ export function defparamsOf(
   body: ModuleBody,
   deep: readonly DeepOverride[],
 ): ReadonlyMap<number, Overrides> {
+  if (body.defparams.length === 0 && deep.length === 0) return none;
   const collected = new Map<number, Collected>();
   for (const { scope, item } of body.defparams) {
     const value = evaluateConstant(item.value, scope);

@@ -21,12 +21,12 @@ export function fuseBuffers(recording: Recording, usage: Usage): Uint32Array | u
     const output = canonical[recording.driverOutput(buffer)]!;
     const input = canonical[recording.faninAt(recording.faninStart(buffer))]!;
     const driver = driverOf[input]!;
-    if (recording.isDeclared(input) || usage.drivers[input] !== 1 || driver === NO_NET) continue;
+    if (recording.isDeclared(input) || usage.drivers(input) !== 1 || driver === NO_NET) continue;
     if (usage.isBus(netId(input))) continue;
     const kind = recording.driverKind(driver);
     if (kind <= GateKind.Unknown) {
       recording.makeConstant(buffer, kind as GateKind);
-    } else if (output < input && usage.drivers[output] === 1) {
+    } else if (output < input && usage.drivers(output) === 1) {
       recording.redirect(driver, netId(output));
       recording.drop(buffer);
       canonical[input] = output;

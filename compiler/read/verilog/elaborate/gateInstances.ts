@@ -58,6 +58,12 @@ function build(body: ModuleBody, scope: BlockScope, gate: Gate): void {
   const first = module.instances.connectionStart(instance);
   const last = module.instances.connectionStart(instance + 1) - 1;
   const outputCount = terminalsOf[row.form].driven(last - first + 1);
+  const single = count === 1 ? simpleTerminals(body, scope, gate, outputCount) : undefined;
+  if (single !== undefined) {
+    body.buildAt(module.instances.position(instance));
+    buildElement(builder, gate, single);
+    return;
+  }
   const terminals: (readonly NetId[])[] = [];
   for (let connection = first; connection <= last; connection++) {
     const nets = terminalNets(body, scope, gate, connection, connection - first < outputCount);
@@ -69,6 +75,25 @@ function build(body: ModuleBody, scope: BlockScope, gate: Gate): void {
     const nets = terminals.map((each) => (each.length === 1 ? each[0]! : each[element]!));
     buildElement(builder, gate, nets);
   }
+}
+
+/** The nets of all terminals, the first `outputCount` of which are driven, if these are simple. */
+function simpleTerminals(
+  body: ModuleBody,
+  scope: BlockScope,
+  { instance }: Gate,
+  outputCount: number,
+): readonly NetId[] | undefined {
+  const table = body.module.instances;
+  const first = table.connectionStart(instance);
+  const end = table.connectionStart(instance + 1);
+  const nets: NetId[] = [];
+  for (let connection = first; connection < end; connection++) {
+    const net = simpleNet(body, scope, table, connection, connection - first < outputCount);
+    if (net === NOT_SIMPLE) return undefined;
+    nets.push(net);
+  }
+  return nets;
 }
 
 const strong: Strengths = { zero: Strength.Strong, one: Strength.Strong };

@@ -173,6 +173,7 @@ function placeArray(body: ModuleBody, placed: Placed, number: number, syntax: Ra
   const { symbols } = placed.scope;
   const { start, end } = syntax;
   const step = msb < lsb ? -1 : 1;
+  body.arrayLengths ??= new Map();
   body.arrayLengths.set(number, Math.abs(msb - lsb) + 1);
   for (let index = lsb; index !== msb + step; index += step) {
     const base = placed.name;

@@ -52,15 +52,18 @@ function readersOf(
   find: (net: number) => number,
 ): Uint32Array {
   const readers = new Uint32Array(recording.netCount);
+  const count = (net: number): void => {
+    readers[find(net)]!++;
+  };
   for (let driver = 0; driver < recording.driverCount; driver++) {
-    forEachFanin(recording, driver, (net) => readers[find(net)]!++);
+    forEachFanin(recording, driver, count);
     // A bus counts as read: its parts are not taken out one by one.
     if (recording.driverKind(driver) !== BUS_PART) continue;
     readers[find(recording.driverOutput(driver))]!++;
   }
-  for (const net of recording.writtenNets()) readers[find(net)]!++;
-  for (const { inputs } of recording.tables) for (const net of inputs) readers[find(net)]!++;
-  children.forEachNet((net) => readers[find(net)]!++);
+  for (const net of recording.writtenNets()) count(net);
+  for (const { inputs } of recording.tables) for (const net of inputs) count(net);
+  children.forEachNet(count);
   for (const net of boundary) readers[net]!++;
   return readers;
 }

@@ -98,11 +98,12 @@ export class Recording implements GateSink {
   readonly #source = new GrowableUint32(8);
   readonly #offset = new GrowableUint32(8);
   readonly #fanin = new GrowableUint32(16);
-  readonly #constants = new Map<number, NetId>();
+  /** By their kind. */
+  readonly #constants: NetId[] = [];
   /** Of a cell with one output or a few; empty for other modules. */
   readonly tables: RecordedTable[] = [];
   readonly memories: RecordedMemory[] = [];
-  readonly #words = new Map<string, readonly NetId[]>();
+  #words: Map<string, readonly NetId[]> | undefined;
   readonly #budget: Budget | undefined;
   #undeclared = 0;
   #atSource = 0;
@@ -203,10 +204,10 @@ export class Recording implements GateSink {
 
   /** The module's one net of a constant. */
   constant(kind: GateKind): NetId {
-    const known = this.#constants.get(kind);
+    const known = this.#constants[kind];
     if (known !== undefined) return known;
     const net = this.net();
-    this.#constants.set(kind, net);
+    this.#constants[kind] = net;
     this.drive(net, kind, []);
     return net;
   }
@@ -239,12 +240,13 @@ export class Recording implements GateSink {
 
   readMemory(memory: number, address: readonly NetId[]): readonly NetId[] {
     const key = `${memory} ${address.join()}`;
-    const known = this.#words.get(key);
+    const known = this.#words?.get(key);
     if (known !== undefined) return known;
     const { width, reads } = this.memories[memory]!;
     reads.push({ address: [...address], firstDriver: this.driverCount });
     const word = Array.from({ length: width }, () => this.net());
     for (const net of word) this.drive(net, GateKind.MemoryRead, address);
+    this.#words ??= new Map();
     this.#words.set(key, word);
     return word;
   }

@@ -3,12 +3,12 @@ import type { LazyList, NameSource, Signal } from '../../../circuit/hierarchy.js
 import type { NameId } from '../../names.js';
 
 /** What few signals have. */
-interface Rarity {
+export interface Rarity {
   readonly msb: number;
   readonly lsb: number;
   readonly isVector: boolean;
-  readonly isSigned?: boolean;
-  /** Of a word of a memory. */
+  readonly isSigned: boolean;
+  /** Of a word of a memory, whose name is not the text of the `NameId`. */
   readonly name: string | undefined;
 }
 
@@ -41,15 +41,11 @@ export class SignalTable implements LazyList<Signal> {
     this.#columns.push(this.#bits++);
   }
 
-  /** Adds any signal; `text` where its name is not the text of `name`. */
-  push(
-    name: NameId,
-    shape: Pick<Signal, 'msb' | 'lsb' | 'isVector' | 'isSigned'>,
-    text?: string,
-  ): void {
-    const { msb, lsb } = shape;
+  /** Adds any signal. */
+  push(name: NameId, rarity: Rarity): void {
+    const { msb, lsb } = rarity;
     this.#rarities ??= new Map();
-    this.#rarities.set(this.length, { ...shape, name: text });
+    this.#rarities.set(this.length, rarity);
     this.#columns.push(name);
     this.#columns.push(this.#bits);
     this.#bits += Math.abs(msb - lsb) + 1;
@@ -74,4 +70,4 @@ export class SignalTable implements LazyList<Signal> {
   }
 }
 
-const scalar: Rarity = { msb: 0, lsb: 0, isVector: false, name: undefined };
+const scalar: Rarity = { msb: 0, lsb: 0, isVector: false, isSigned: false, name: undefined };

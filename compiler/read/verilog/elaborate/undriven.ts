@@ -16,17 +16,15 @@ import type { Usage } from './usage.js';
 export function reportUndriven(
   body: ModuleBody,
   usage: Usage,
-  boundary: Boundary,
   isDrivenAbove: (net: NetId) => boolean,
 ): void {
-  const isPort = new Set<number>(boundary.nets.map((net) => body.builder.find(net)));
   const isDriven = (net: NetId): boolean => {
     const root = body.builder.find(net);
     return usage.driveOf(root) !== Drive.None || isDrivenAbove(root);
   };
   const isOpen = (net: number): boolean => {
     const root = body.builder.find(netId(net));
-    return usage.isRead[root] === 1 && !isPort.has(root) && !isDriven(root);
+    return usage.isOpen(root) && !isDrivenAbove(root);
   };
   for (const open of body.openInputs) reportOpenInput(body, open, isDriven);
   for (const scope of body.blocks) {
@@ -41,6 +39,18 @@ export function reportUndriven(
       }
     }
   }
+}
+
+/** Whether `reportUndriven` may find anything; `usage` is told which nets are those of ports. */
+export function mayBeUndriven(
+  { openInputs }: ModuleBody,
+  usage: Usage,
+  { nets }: Boundary,
+): boolean {
+  for (const net of nets) usage.markPort(net);
+  if (openInputs.length > 0) return true;
+  for (let net = 0; net < usage.netCount; net++) if (usage.isOpen(net)) return true;
+  return false;
 }
 
 function reportOpenInput(

@@ -1,23 +1,24 @@
 /** Which nets of a module are one net: a union-find over the few that are joined. */
 export class Unions {
   // Only nets that are joined to an older one have an entry, and most modules have none.
-  readonly #older = new Map<number, number>();
+  #older: Map<number, number> | undefined;
 
   get isEmpty(): boolean {
-    return this.#older.size === 0;
+    return this.#older === undefined;
   }
 
   /** The oldest net of those that a net is one with. */
   find(net: number): number {
-    if (this.#older.size === 0) return net;
+    const older = this.#older;
+    if (older === undefined) return net;
     let root = net;
-    for (let next = this.#older.get(root); next !== undefined; next = this.#older.get(root)) {
+    for (let next = older.get(root); next !== undefined; next = older.get(root)) {
       root = next;
     }
     // Path compression keeps later searches short.
     for (let at = net; at !== root; ) {
-      const next = this.#older.get(at)!;
-      this.#older.set(at, root);
+      const next = older.get(at)!;
+      older.set(at, root);
       at = next;
     }
     return root;
@@ -27,6 +28,8 @@ export class Unions {
   join(a: number, b: number): void {
     const rootA = this.find(a);
     const rootB = this.find(b);
-    if (rootA !== rootB) this.#older.set(Math.max(rootA, rootB), Math.min(rootA, rootB));
+    if (rootA === rootB) return;
+    this.#older ??= new Map();
+    this.#older.set(Math.max(rootA, rootB), Math.min(rootA, rootB));
   }
 }

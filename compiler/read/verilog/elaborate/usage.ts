@@ -5,69 +5,104 @@ import type { Children } from './children.js';
 import { BUS_PART, BusPin, DROPPED, Pin, type Recording } from './recording.js';
 import { Drive, type Template } from './template.js';
 
-const SHARED = 1;
-const WEAK = 2;
+// Of the number that `Usage` has for a net, the lowest bits count its full drivers.
+const DRIVERS = 3;
+const SEVERAL = 2;
+const SHARED = 4;
+const WEAK = 8;
 /** Set beside one of the others for a driver that is always on. */
-const STEADY = 4;
+const STEADY = 16;
+const READ = 32;
+const PORT = 64;
 
 /** Who drives and who reads each net of a module, its instances included. */
 export class Usage {
-  /** Per net: 0, 1 or 2 for several full drivers; counted at the oldest of joined nets. */
-  readonly drivers: Uint8Array;
-  /** Per net: whether anything reads it. */
-  readonly isRead: Uint8Array;
+  /** Per net, at the oldest of joined nets: the number of full drivers, and the bits above. */
+  readonly #nets: Uint8Array;
   /** Nets that may have several full drivers. */
-  readonly wired = new Set<number>();
-  readonly #others: Uint8Array;
+  #wired: Set<number> | undefined;
   readonly #recording: Recording;
 
   constructor(recording: Recording) {
     this.#recording = recording;
-    this.drivers = new Uint8Array(recording.netCount);
-    this.isRead = new Uint8Array(recording.netCount);
-    this.#others = new Uint8Array(recording.netCount);
+    this.#nets = new Uint8Array(recording.netCount);
   }
 
   /** Counts a driver of a kind that `Drive` tells. */
   drive(net: NetId, drive: number): void {
     const root = this.#recording.find(net);
-    if (drive === Drive.Shared) this.#others[root]! |= SHARED;
-    else if (drive === Drive.Weak) this.#others[root]! |= WEAK;
-    else if (drive === Drive.Full && this.drivers[root]! < 2) this.drivers[root]!++;
+    if (drive === Drive.Shared) this.#nets[root]! |= SHARED;
+    else if (drive === Drive.Weak) this.#nets[root]! |= WEAK;
+    else if (drive === Drive.Full && this.drivers(root) < SEVERAL) this.#nets[root]!++;
   }
 
   read(net: NetId): void {
-    this.isRead[this.#recording.find(net)] = 1;
+    this.#nets[this.#recording.find(net)]! |= READ;
+  }
+
+  /** The full drivers of the oldest of joined nets: 0, 1 or 2 for several. */
+  drivers(root: number): number {
+    return this.#nets[root]! & DRIVERS;
+  }
+
+  /** Whether anything reads the oldest of joined nets. */
+  isRead(root: number): boolean {
+    return (this.#nets[root]! & READ) !== 0;
+  }
+
+  /** Puts on record that a net is one of a port, which its instances are to drive. */
+  markPort(net: NetId): void {
+    this.#nets[this.#recording.find(net)]! |= PORT;
+  }
+
+  /** Whether the oldest of joined nets is read though neither a driver nor a port gives it a value. */
+  isOpen(root: number): boolean {
+    return (this.#nets[root]! & (READ | PORT | DRIVERS | SHARED | WEAK)) === READ;
+  }
+
+  /** Lets a net have several full drivers. */
+  allowSeveral(net: number): void {
+    this.#wired ??= new Set();
+    this.#wired.add(net);
   }
 
   /** The `Drive` of a net. */
   driveOf(net: NetId): number {
     const root = this.#recording.find(net);
-    if (this.drivers[root]! > 0) return this.wired.has(root) ? Drive.Shared : Drive.Full;
-    if ((this.#others[root]! & SHARED) !== 0) return Drive.Shared;
-    return (this.#others[root]! & WEAK) !== 0 ? Drive.Weak : Drive.None;
+    if (this.drivers(root) > 0) return this.#isWired(root) ? Drive.Shared : Drive.Full;
+    if ((this.#nets[root]! & SHARED) !== 0) return Drive.Shared;
+    return (this.#nets[root]! & WEAK) !== 0 ? Drive.Weak : Drive.None;
   }
 
   /** Puts on record that a net has a driver that always is on. */
   keepDriven(net: NetId): void {
-    this.#others[this.#recording.find(net)]! |= STEADY;
+    this.#nets[this.#recording.find(net)]! |= STEADY;
   }
 
   /** Whether a net has drivers, but none that always is on. */
   mayFloat(net: NetId): boolean {
     const root = this.#recording.find(net);
-    return this.drivers[root] === 0 && (this.#others[root]! & (SHARED | STEADY)) === SHARED;
+    return (this.#nets[root]! & (DRIVERS | SHARED | STEADY)) === SHARED;
   }
 
   /** Whether a net has anything but full drivers. */
   isBus(net: NetId): boolean {
     const root = this.#recording.find(net);
-    return this.#others[root] !== 0 || this.wired.has(root);
+    return (this.#nets[root]! & (SHARED | WEAK | STEADY)) !== 0 || this.#isWired(root);
+  }
+
+  #isWired(root: number): boolean {
+    return this.#wired?.has(root) ?? false;
+  }
+
+  /** The nets that the module had when its drivers were counted. */
+  get netCount(): number {
+    return this.#nets.length;
   }
 
   /** Whether the module knew a net when its drivers were counted. */
   knows(net: NetId): boolean {
-    return net < this.drivers.length;
+    return net < this.#nets.length;
   }
 }
 
@@ -78,9 +113,10 @@ export function usageOf(
   templates: readonly Template[],
 ): Usage {
   const usage = new Usage(recording);
+  const read = (net: NetId): void => usage.read(net);
   for (let driver = 0; driver < recording.driverCount; driver++) {
     countDriver(recording, driver, usage);
-    forEachFanin(recording, driver, (net) => usage.read(net));
+    forEachFanin(recording, driver, read);
   }
   for (const net of recording.writtenNets()) usage.read(net);
   for (const { reads } of recording.tables) for (const net of reads) usage.read(net);
@@ -93,6 +129,7 @@ export function usageOf(
       usage.drive(net, drives[place]!);
       if (reads[place] === 1) usage.read(net);
     }
+    if (!children.hasImports) continue;
     for (const { childNet, net } of children.imports(child)) {
       usage.drive(net, template.driveOf(childNet));
       if (template.readsNet(childNet)) usage.read(net);
@@ -107,11 +144,18 @@ export function usesOf(
   boundary: Uint32Array,
   find: (net: number) => number,
 ): Pick<Template, 'drives' | 'reads' | 'driveOf' | 'readsNet'> {
+  const drives = new Uint8Array(boundary.length);
+  const reads = new Uint8Array(boundary.length);
+  for (let place = 0; place < boundary.length; place++) {
+    const net = boundary[place]!;
+    drives[place] = usage.driveOf(net as NetId);
+    if (usage.isRead(net)) reads[place] = 1;
+  }
   return {
-    drives: Uint8Array.from(boundary, (net) => usage.driveOf(net as NetId)),
-    reads: Uint8Array.from(boundary, (net) => usage.isRead[net]!),
+    drives,
+    reads,
     driveOf: (net) => usage.driveOf(find(net) as NetId),
-    readsNet: (net) => usage.isRead[find(net)] === 1,
+    readsNet: (net) => usage.isRead(find(net)),
   };
 }
 

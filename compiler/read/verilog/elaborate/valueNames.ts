@@ -11,6 +11,8 @@ const MOST_BITS = 32;
 
 const equalities: ReadonlySet<unknown> = new Set(['==', '!=', '===', '!==']);
 
+const none: readonly SignalValues[] = [];
+
 type Pair = readonly [signal: Expression, value: Expression];
 
 /**
@@ -18,7 +20,12 @@ type Pair = readonly [signal: Expression, value: Expression];
  * the names of parameters: mostly the states of a machine. A value with two names has none, and a
  * single value with a name is a limit rather than a state.
  */
-export function valueNamesOf({ processes, assigns, names: texts }: ModuleBody): SignalValues[] {
+export function valueNamesOf({
+  processes,
+  assigns,
+  names: texts,
+}: ModuleBody): readonly SignalValues[] {
+  if (processes.length === 0) return none;
   const found = new Map<NetId, { nets: readonly NetId[]; names: Map<number, NameId> }>();
   const twice = new Set<string>();
   const note = (scope: BlockScope, [signal, value]: Pair): void => {
@@ -42,7 +49,7 @@ export function valueNamesOf({ processes, assigns, names: texts }: ModuleBody): 
       return true;
     });
   for (const { scope, item } of processes) look(scope, item.body);
-  if (processes.length > 0) for (const { scope, item } of assigns) look(scope, item.value);
+  for (const { scope, item } of assigns) look(scope, item.value);
   const named = [...found].map(([key, { nets, names }]) => ({
     nets,
     names: new Map(
