@@ -51,7 +51,5 @@ function repeats(
   const operations = nodes.filter((node) => op[node]! >= LogicOp.And);
   for (const node of operations) counts.set(shape[node]!, (counts.get(shape[node]!) ?? 0) + 1);
   const repeated = operations.filter((node) => counts.get(shape[node]!)! >= least).length;
-  if (process.env.SHOW)
-    console.error(nodes.length, operations.length, repeated / operations.length);
   return repeated >= operations.length * LEAST_REPEATED;
 }
