@@ -33,10 +33,16 @@ binaryLevels.forEach((kinds, level) => {
   for (const kind of kinds) precedence[kind] = level + 1;
 });
 
-const unaryKinds: ReadonlySet<number> = new Set([
+const unaryKinds = new Uint8Array(256);
+for (const kind of [
   ...[Token.Plus, Token.Minus, Token.Not, Token.Tilde, Token.And, Token.Nand, Token.Or],
   ...[Token.Nor, Token.Xor, Token.Xnor],
-]);
+]) {
+  unaryKinds[kind] = 1;
+}
+
+/** Texts of operators by token, without the quotes of messages. */
+const operatorTexts = Array.from({ length: 256 }, (_, kind) => tokenTexts[kind]?.slice(1, -1));
 
 /** expression ::= operand { binary_operator operand } [ `?` expression `:` expression ] */
 export function parseExpression(p: Parser): Expression {
@@ -106,8 +112,17 @@ function parseConditional(p: Parser, first: Expression): Expression {
 function parseBinary(p: Parser, first: Expression): Expression {
   const { tokens } = p;
   if (precedence[tokens.kind] === 0) return first;
-  const operands = [first];
-  const operators: number[] = [];
+  const operator = tokens.kind;
+  tokens.next();
+  const second = parseOperand(p);
+  return precedence[tokens.kind] === 0
+    ? binary(operator, first, second)
+    : parseMore(p, [first, second], [operator]);
+}
+
+/** Goes on with an expression that has more than two operands. */
+function parseMore(p: Parser, operands: Expression[], operators: number[]): Expression {
+  const { tokens } = p;
   for (;;) {
     const { kind } = tokens;
     const level = precedence[kind]!;
@@ -123,7 +138,7 @@ function parseBinary(p: Parser, first: Expression): Expression {
 }
 
 function binary(kind: number, left: Expression, right: Expression): Expression {
-  const operator = tokenTexts[kind]!.slice(1, -1) as BinaryOperator;
+  const operator = operatorTexts[kind] as BinaryOperator;
   return { kind: 'binary', operator, left, right, start: left.start, end: right.end };
 }
 
@@ -132,12 +147,12 @@ function parseOperand(p: Parser): Expression {
   const { tokens } = p;
   const { kind, start } = tokens;
   if (kind === Token.Identifier) return parseNameOrCall(p);
-  if (unaryKinds.has(kind)) {
+  if (unaryKinds[kind] === 1) {
     p.enter();
     tokens.next();
     const operand = parseOperand(p);
     p.leave();
-    const operator = tokenTexts[kind]!.slice(1, -1) as UnaryOperator;
+    const operator = operatorTexts[kind] as UnaryOperator;
     return { kind: 'unary', operator, operand, start, end: operand.end };
   }
   switch (kind) {
@@ -158,7 +173,11 @@ function parseOperand(p: Parser): Expression {
       const inner = parseMinTypMax(p);
       p.expect(Token.RightParen);
       p.leave();
-      return { ...inner, start, end: tokens.lastEnd };
+      // It is new, and nobody else has it yet.
+      const widened: { start: Position; end: Position } = inner;
+      widened.start = start;
+      widened.end = tokens.lastEnd;
+      return inner;
     }
     case Token.LeftBrace:
       return parseConcat(p);

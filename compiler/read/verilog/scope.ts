@@ -173,6 +173,12 @@ export interface Scope {
    * it under a name of its own, the text `g[2]` with the index in decimal (`names.internText`).
    */
   resolve(path: readonly NameId[]): Binding | undefined;
+  /**
+   * The net of a name that is a signal of one bit; with an index, of that bit of a vector. -1 where
+   * it takes more to tell, or where `drives` asks for a net and it is a variable. Absent where a
+   * scope cannot tell.
+   */
+  netOf?(name: NameId, index: number | undefined, drives: boolean): number;
   /** Why a name does not resolve although it is declared; undefined where it is not. */
   unusable?(name: NameId): Unusable | undefined;
   /** The names that can be used here, for a message about one that cannot. */

@@ -13,6 +13,7 @@ import { constantIn, plainNumber } from './widths.js';
 export { lowerAlways } from './always.js';
 export { isPureFunction } from './constantCalls.js';
 export { lowerInitial } from './initial.js';
+export { lowerScalarAssign } from './scalars.js';
 export { isBare, walk } from './walk.js';
 
 /**

@@ -20,9 +20,8 @@ export class Logic {
   readonly sink: GateSink;
   readonly #budget: Budget | undefined;
   readonly #constants: (NetId | undefined)[] = [];
-  // Constants need neither.
+  // Constants need none.
   #made: GateTable | undefined;
-  #inverse: Map<NetId, NetId> | undefined;
 
   /** `budget` is charged for the gates made. */
   constructor(sink: GateSink, budget?: Budget) {
@@ -33,7 +32,6 @@ export class Logic {
   /** Forgets the gates made, but for constants: the next ones are made anew. */
   clear(): void {
     this.#made?.clear();
-    this.#inverse?.clear();
   }
 
   get zero(): NetId {
@@ -76,13 +74,12 @@ export class Logic {
   not(a: NetId): NetId {
     const value = this.valueOf(a);
     if (value !== undefined) return this.constant(value === X ? X : value === 0 ? 1 : 0);
-    this.#inverse ??= new Map();
-    let inverse = this.#inverse.get(a);
-    if (inverse === undefined) {
-      inverse = this.sink.gate(GateKind.Not, [a]);
-      this.#inverse.set(a, inverse);
-      this.#inverse.set(inverse, a);
-    }
+    this.#made ??= new GateTable();
+    const known = this.#made.find(GateKind.Not, [a]);
+    if (known !== NO_GATE) return known;
+    const inverse = this.sink.gate(GateKind.Not, [a]);
+    this.#made.add(GateKind.Not, [a], inverse);
+    this.#made.add(GateKind.Not, [inverse], a);
     return inverse;
   }
 

@@ -8,6 +8,7 @@ import {
   lowerExpression,
   lowerIfFloating,
   lowerInitial,
+  lowerScalarAssign,
   lowerTarget,
 } from '../behaviour/index.js';
 import type { Expression } from '../syntax.js';
@@ -54,6 +55,12 @@ function lowerAssign(
   { target, value, strength, start }: Assign,
 ): void {
   body.buildAt(start);
+  const scalar = strength === undefined ? lowerScalarAssign(target, value, scope) : undefined;
+  if (scalar !== undefined) {
+    if (isBare(value)) body.copies.push(body.builder.driverCount);
+    body.builder.drive(scalar.target, GateKind.Buf, [scalar.value]);
+    return;
+  }
   const targets = lowerTarget(target, scope);
   if (targets === undefined) return;
   const strengths = strengthsOf(strength);

@@ -114,6 +114,17 @@ export class BlockScope implements Scope {
     return named ?? this.shared.bindingAbove?.(path);
   }
 
+  netOf(name: NameId, index: number | undefined, drives: boolean): number {
+    for (let scope: BlockScope | undefined = this; scope; scope = scope.parent) {
+      const symbol = scope.symbols.find(name);
+      if (symbol < 0) continue;
+      return index === undefined
+        ? scope.symbols.scalarAt(symbol, drives)
+        : scope.symbols.bitAt(symbol, index, drives);
+    }
+    return -1;
+  }
+
   block(name: NameId): BlockScope | undefined {
     const symbol = this.symbols.find(name);
     if (symbol < 0 || this.symbols.kind(symbol) !== SymbolKind.Block) return undefined;

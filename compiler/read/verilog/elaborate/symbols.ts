@@ -120,13 +120,29 @@ export class SymbolTable {
    */
   scalar(name: NameId, drives: boolean): number {
     const symbol = this.find(name);
-    if (symbol < 0) return -1;
+    return symbol < 0 ? -1 : this.scalarAt(symbol, drives);
+  }
+
+  /** As `scalar`, of a symbol. */
+  scalarAt(symbol: number, drives: boolean): number {
     const records = this.#records;
     const at = symbol * RECORD;
     const traits = records.get(at + Field.Traits);
-    if ((traits & BYTE) !== SymbolKind.Signal) return -1;
+    if ((traits & KIND) !== SymbolKind.Signal) return -1;
+    if ((traits & RARE) !== 0 && this.width(symbol) !== 1) return -1;
     if (drives && ((traits >> FLAGS) & Flag.Variable) !== 0) return -1;
     return records.get(at + Field.Value);
+  }
+
+  /** The net of a bit of a symbol that is a vector with such a bit; else, as for `scalar`, -1. */
+  bitAt(symbol: number, index: number, drives: boolean): number {
+    if (this.kind(symbol) !== SymbolKind.Signal) return -1;
+    const flags = this.flags(symbol);
+    if ((flags & Flag.Vector) === 0 || (drives && (flags & Flag.Variable) !== 0)) return -1;
+    const msb = this.msb(symbol);
+    const lsb = this.lsb(symbol);
+    const bit = lsb <= msb ? index - lsb : lsb - index;
+    return bit >= 0 && bit <= Math.abs(msb - lsb) ? this.value(symbol) + bit : -1;
   }
 
   /** Adds a symbol; the name must be new. */

@@ -7,7 +7,6 @@ import type { BlockScope } from './blockScope.js';
 import type { ModuleBody } from './body.js';
 import { declareImplicit } from './declarations.js';
 import { forEachName, forEachTarget } from './expressions.js';
-import { Flag, SymbolKind } from './symbols.js';
 
 /** What a connection gives where it is no single net that can be told at once. */
 export const NOT_SIMPLE = -1;
@@ -30,21 +29,9 @@ export function simpleNet(
   if (scalar >= 0) return netId(scalar);
   const owner = scope.owner(name) ?? implicitOwner(body, scope, table, connection);
   if (owner === undefined) return NOT_SIMPLE;
-  const { symbols } = owner;
-  const symbol = symbols.find(name);
-  if (symbols.kind(symbol) !== SymbolKind.Signal) return NOT_SIMPLE;
-  const flags = symbols.flags(symbol);
-  if (drives && (flags & Flag.Variable) !== 0) return NOT_SIMPLE;
-  const first = symbols.value(symbol);
-  if (kind === ConnectionKind.Name) {
-    return symbols.width(symbol) === 1 ? netId(first) : NOT_SIMPLE;
-  }
-  const index = table.connectionSecond(connection);
-  const msb = symbols.msb(symbol);
-  const lsb = symbols.lsb(symbol);
-  const bit = lsb <= msb ? index - lsb : lsb - index;
-  const isThere = (flags & Flag.Vector) !== 0 && bit >= 0 && bit < symbols.width(symbol);
-  return isThere ? netId(first + bit) : NOT_SIMPLE;
+  const index = kind === ConnectionKind.Bit ? table.connectionSecond(connection) : undefined;
+  const net = owner.netOf(name, index, drives);
+  return net < 0 ? NOT_SIMPLE : netId(net);
 }
 
 /** A connection as an expression, whichever way it is stored; undefined where it is empty. */
