@@ -56,6 +56,9 @@ const Field = { Port: 0, Target: 1, Position: 2 } as const;
 const KIND = 30;
 const MOST = (1 << KIND) - 1;
 
+// The record of an instance; `Start` is its first connection.
+const InstanceField = { Module: 0, Name: 1, Position: 2, Start: 3, Size: 4 } as const;
+
 /** Value of `connectionPort` for a positional connection. */
 export const POSITIONAL = 0xffffffff;
 
@@ -74,12 +77,9 @@ export interface InstanceExtras {
  * The connections of instance i are `connectionStart(i) … connectionStart(i + 1) - 1`.
  */
 export class InstanceTable {
-  readonly #module = new GrowableUint32();
-  readonly #name = new GrowableUint32();
-  readonly #position = new GrowableUint32();
-  readonly #start = new GrowableUint32();
+  readonly #instances = new GrowableUint32(8 * InstanceField.Size);
   readonly #connection = new GrowableUint32();
-  readonly #bits = new GrowableUint32();
+  readonly #bits = new GrowableUint32(16);
   #extras: Map<number, InstanceExtras> | undefined;
   readonly expressions: Expression[] = [];
   readonly #fractionRead: () => number;
@@ -93,7 +93,7 @@ export class InstanceTable {
   }
 
   get count(): number {
-    return this.#module.length;
+    return this.#instances.length / InstanceField.Size;
   }
 
   /**
@@ -101,17 +101,19 @@ export class InstanceTable {
    * primitive, or `-1 - g` for `builtinGates[g]`. `name` is 0 where the instance has none.
    */
   begin(module: number, name: NameId, position: Position, extras?: InstanceExtras): number {
-    if (this.#module.length === 0) this.#fractionBefore = this.#fractionRead();
+    const { count } = this;
+    if (count === 0) this.#fractionBefore = this.#fractionRead();
     if (this.#connectionCount >= this.#reserved) this.#reserve();
     if (extras !== undefined) {
       this.#extras ??= new Map();
-      this.#extras.set(this.#module.length, extras);
+      this.#extras.set(count, extras);
     }
-    this.#module.push(module >>> 0);
-    this.#name.push(name);
-    this.#position.push(position);
-    this.#start.push(this.#connectionCount);
-    return this.#module.length - 1;
+    const instances = this.#instances;
+    instances.push(module >>> 0);
+    instances.push(name);
+    instances.push(position);
+    instances.push(this.#connectionCount);
+    return count;
   }
 
   /** Adds a connection to the instance begun last. `port` is a NameId or `POSITIONAL`. */
@@ -131,11 +133,9 @@ export class InstanceTable {
   #reserve(): void {
     const read = (this.#fractionRead() - this.#fractionBefore) / (1 - this.#fractionBefore);
     const scale = Math.min(MOST_SCALE, 1.05 / Math.max(read, 0.01));
-    const instances = Math.ceil(this.#module.length * scale);
+    const instances = Math.ceil(this.count * scale);
     const connections = Math.ceil(this.#connectionCount * scale);
-    for (const column of [this.#module, this.#name, this.#position, this.#start]) {
-      column.reserve(instances);
-    }
+    this.#instances.reserve(instances * InstanceField.Size);
     this.#connection.reserve(CONNECTION * connections);
     this.#bits.reserve(Math.ceil(this.#bits.length * scale));
     // Before the last of them is there, and with it the need for more.
@@ -144,16 +144,16 @@ export class InstanceTable {
 
   /** NameId of the module or primitive, or `-1 - g` for a built-in gate. */
   module(instance: number): number {
-    return this.#module.get(instance) | 0;
+    return this.#field(instance, InstanceField.Module) | 0;
   }
 
   name(instance: number): NameId {
-    return this.#name.get(instance);
+    return this.#field(instance, InstanceField.Name);
   }
 
   /** Where the instance's text starts. */
   position(instance: number): Position {
-    return this.#position.get(instance);
+    return this.#field(instance, InstanceField.Position);
   }
 
   extras(instance: number): InstanceExtras | undefined {
@@ -161,7 +161,9 @@ export class InstanceTable {
   }
 
   connectionStart(instance: number): number {
-    return instance < this.count ? this.#start.get(instance) : this.#connectionCount;
+    return instance < this.count
+      ? this.#field(instance, InstanceField.Start)
+      : this.#connectionCount;
   }
 
   /** NameId of the port, or `POSITIONAL`. */
@@ -187,6 +189,10 @@ export class InstanceTable {
 
   connectionPosition(connection: number): Position {
     return this.#connection.get(connection * CONNECTION + Field.Position);
+  }
+
+  #field(instance: number, field: number): number {
+    return this.#instances.get(instance * InstanceField.Size + field);
   }
 
   get #connectionCount(): number {

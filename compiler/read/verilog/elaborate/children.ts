@@ -23,25 +23,21 @@ interface ReachedNet {
   readonly childNet: NetId;
 }
 
-// What an instance takes in the columns below, its ports aside.
-const NUMBERS_OF_CHILD = 6;
+// The record of an instance.
+const Field = { Template: 0, Name: 1, Block: 2, Source: 3, Offset: 4, Ports: 5, Size: 6 } as const;
 
 const noImports: readonly Import[] = [];
 const noMemories: readonly MemoryImport[] = [];
 
 /**
- * The instances inside a module, as columns: which template, under which name, and the parent's
+ * The instances inside a module, as records of numbers: which template, under which name, and the parent's
  * net for each net of the template's boundary (`NO_NET` where unconnected).
  */
 export class Children {
   readonly #budget: Budget | undefined;
-  readonly #template = new GrowableUint32(2);
-  readonly #name = new GrowableUint32(2);
-  readonly #block = new GrowableUint32(2);
-  readonly #source = new GrowableUint32(2);
-  readonly #offset = new GrowableUint32(2);
-  readonly #portStart = new GrowableUint32(2);
+  readonly #records = new GrowableUint32(2 * Field.Size);
   readonly #ports = new GrowableUint32(8);
+  #count = 0;
   // Few modules have any of these.
   #imports: Map<number, Import[]> | undefined;
   #memories: Map<number, MemoryImport[]> | undefined;
@@ -54,15 +50,12 @@ export class Children {
 
   /** Makes room for so many instances with so many connections in all. */
   reserve(instances: number, connections: number): void {
-    for (const column of [this.#template, this.#name, this.#block, this.#source, this.#offset]) {
-      column.reserve(instances);
-    }
-    this.#portStart.reserve(instances);
+    this.#records.reserve(instances * Field.Size);
     this.#ports.reserve(connections);
   }
 
   get count(): number {
-    return this.#template.length;
+    return this.#count;
   }
 
   /**
@@ -70,41 +63,46 @@ export class Children {
    * is 0 where it shall make no scope.
    */
   add(template: number, name: NameId, block: number, origin: Origin, width: number): number {
-    if (this.#budget?.grow(NUMBERS_OF_CHILD + width) === false) throw tooLarge(origin);
-    this.#template.push(template);
-    this.#name.push(name);
-    this.#block.push(block);
-    this.#source.push(origin.source);
-    this.#offset.push(origin.offset);
-    this.#portStart.push(this.#ports.length);
+    if (this.#budget?.grow(Field.Size + width) === false) throw tooLarge(origin);
+    const records = this.#records;
+    records.push(template);
+    records.push(name);
+    records.push(block);
+    records.push(origin.source);
+    records.push(origin.offset);
+    records.push(this.#ports.length);
     this.#ports.extend(width, NO_NET);
-    return this.#template.length - 1;
+    return this.#count++;
   }
 
   template(child: number): number {
-    return this.#template.get(child);
+    return this.#field(child, Field.Template);
   }
 
   name(child: number): NameId {
-    return this.#name.get(child);
+    return this.#field(child, Field.Name);
   }
 
   /** The block of the module that the instance stands in; 0 for the module itself. */
   block(child: number): number {
-    return this.#block.get(child);
+    return this.#field(child, Field.Block);
   }
 
   origin(child: number): Origin {
-    return { source: this.#source.get(child), offset: this.#offset.get(child) };
+    return { source: this.#field(child, Field.Source), offset: this.#field(child, Field.Offset) };
   }
 
   /** The parent's net at a place of the template's boundary. */
   port(child: number, place: number): NetId {
-    return netId(this.#ports.get(this.#portStart.get(child) + place));
+    return netId(this.#ports.get(this.#field(child, Field.Ports) + place));
   }
 
   setPort(child: number, place: number, net: NetId): void {
-    this.#ports.set(this.#portStart.get(child) + place, net);
+    this.#ports.set(this.#field(child, Field.Ports) + place, net);
+  }
+
+  #field(child: number, field: number): number {
+    return this.#records.get(child * Field.Size + field);
   }
 
   /** Calls `visit` for each net of the parent that is connected to a child. */

@@ -65,6 +65,10 @@ export interface RecordedMemory {
   readonly isWritten?: boolean;
 }
 
+// `FirstDriver` is the number of a driver + 1, or 0.
+const NetField = { Source: 0, Offset: 1, FirstDriver: 2, Size: 3 } as const;
+const DriverField = { Output: 0, Start: 1, Source: 2, Offset: 3, Size: 4 } as const;
+
 // What a net and a driver take in the columns below.
 const NUMBERS_OF_NET = 4;
 const NUMBERS_OF_DRIVER = 5;
@@ -87,16 +91,13 @@ export const unpackAttributes = (packed: number) => ({
  */
 export class Recording implements GateSink {
   readonly #unions = new Unions();
-  readonly #netSource = new GrowableUint32(8);
-  readonly #netOffset = new GrowableUint32(8);
+  // A record of each net and of each driver: a design may have thousands of small modules, for which
+  // a column for each field would cost far more than what it holds.
+  readonly #nets = new GrowableUint32(8 * NetField.Size);
   // 1 for a net that a declaration has named.
   readonly #declared = new GrowableUint8(8);
-  readonly #firstDriver = new GrowableUint32(8);
-  readonly #output = new GrowableUint32(8);
+  readonly #drivers = new GrowableUint32(8 * DriverField.Size);
   readonly #kind = new GrowableUint8(8);
-  readonly #start = new GrowableUint32(8);
-  readonly #source = new GrowableUint32(8);
-  readonly #offset = new GrowableUint32(8);
   readonly #fanin = new GrowableUint32(16);
   /** By their kind. */
   readonly #constants: NetId[] = [];
@@ -105,6 +106,8 @@ export class Recording implements GateSink {
   readonly memories: RecordedMemory[] = [];
   #words: Map<string, readonly NetId[]> | undefined;
   readonly #budget: Budget | undefined;
+  #netCount = 0;
+  #driverCount = 0;
   #undeclared = 0;
   #atSource = 0;
   #atOffset = 0;
@@ -121,13 +124,12 @@ export class Recording implements GateSink {
 
   /** Makes room for so many nets. */
   reserve(nets: number): void {
-    for (const column of [this.#netSource, this.#netOffset, this.#firstDriver])
-      column.reserve(nets);
+    this.#nets.reserve(nets * NetField.Size);
     this.#declared.reserve(nets);
   }
 
   get netCount(): number {
-    return this.#netOffset.length;
+    return this.#netCount;
   }
 
   net(): NetId {
@@ -138,10 +140,10 @@ export class Recording implements GateSink {
   #add(declared: number): NetId {
     this.#grow(NUMBERS_OF_NET);
     this.#declared.push(declared);
-    this.#netSource.push(this.#atSource);
-    this.#netOffset.push(this.#atOffset);
-    this.#firstDriver.push(0);
-    return netId(this.#netOffset.length - 1);
+    this.#nets.push(this.#atSource);
+    this.#nets.push(this.#atOffset);
+    this.#nets.push(0);
+    return netId(this.#netCount++);
   }
 
   /** New nets with consecutive ids, for something declared; returns the first. */
@@ -163,9 +165,9 @@ export class Recording implements GateSink {
 
   /** Makes two nets one. */
   join(a: NetId, b: NetId): void {
-    const driver = this.#firstDriver.get(this.find(a)) || this.#firstDriver.get(this.find(b));
+    const driver = this.#firstDriver(this.find(a)) || this.#firstDriver(this.find(b));
     this.#unions.join(a, b);
-    this.#firstDriver.set(this.find(a), driver);
+    this.#setFirstDriver(this.find(a), driver);
   }
 
   /** The oldest of the nets that a net is one with. */
@@ -179,11 +181,11 @@ export class Recording implements GateSink {
   }
 
   isDriven(net: NetId): boolean {
-    return this.#firstDriver.get(this.find(net)) !== 0;
+    return this.#firstDriver(this.find(net)) !== 0;
   }
 
   kindOf(net: NetId): number {
-    const driver = this.#firstDriver.get(this.find(net));
+    const driver = this.#firstDriver(this.find(net));
     if (driver === 0) return -1;
     const kind = this.#kind.get(driver - 1);
     return kind <= GateKind.Unknown && this.isDeclared(net) ? -1 : kind;
@@ -271,11 +273,11 @@ export class Recording implements GateSink {
   // ---- What was recorded, for completing and stamping the module ----
 
   get driverCount(): number {
-    return this.#output.length;
+    return this.#driverCount;
   }
 
   driverOutput(driver: number): NetId {
-    return netId(this.#output.get(driver));
+    return netId(this.#drivers.get(driver * DriverField.Size + DriverField.Output));
   }
 
   /** Takes a driver out; its kind is `DROPPED` from now on. */
@@ -290,7 +292,7 @@ export class Recording implements GateSink {
 
   /** Lets a driver drive another net. */
   redirect(driver: number, net: NetId): void {
-    this.#output.set(driver, net);
+    this.#drivers.set(driver * DriverField.Size + DriverField.Output, net);
   }
 
   /** A `GateKind`, or `DROPPED`. */
@@ -299,7 +301,7 @@ export class Recording implements GateSink {
   }
 
   faninStart(driver: number): number {
-    return this.#start.get(driver);
+    return this.#drivers.get(driver * DriverField.Size + DriverField.Start);
   }
 
   /**
@@ -307,7 +309,7 @@ export class Recording implements GateSink {
    * constant has no meaning.
    */
   faninEnd(driver: number): number {
-    return driver + 1 < this.#start.length ? this.#start.get(driver + 1) : this.#fanin.length;
+    return driver + 1 < this.#driverCount ? this.faninStart(driver + 1) : this.#fanin.length;
   }
 
   faninAt(index: number): NetId {
@@ -315,11 +317,11 @@ export class Recording implements GateSink {
   }
 
   netSource(net: number): number {
-    return this.#netSource.get(net);
+    return this.#nets.get(net * NetField.Size + NetField.Source);
   }
 
   netOffset(net: number): number {
-    return this.#netOffset.get(net);
+    return this.#nets.get(net * NetField.Size + NetField.Offset);
   }
 
   netOrigin(net: number): Origin {
@@ -327,11 +329,11 @@ export class Recording implements GateSink {
   }
 
   driverSource(driver: number): number {
-    return this.#source.get(driver);
+    return this.#drivers.get(driver * DriverField.Size + DriverField.Source);
   }
 
   driverOffset(driver: number): number {
-    return this.#offset.get(driver);
+    return this.#drivers.get(driver * DriverField.Size + DriverField.Offset);
   }
 
   driverOrigin(driver: number): Origin {
@@ -340,14 +342,22 @@ export class Recording implements GateSink {
 
   #begin(net: NetId, kind: number): void {
     this.#grow(NUMBERS_OF_DRIVER);
-    const driver = this.#output.length;
     const root = this.find(net);
-    if (this.#firstDriver.get(root) === 0) this.#firstDriver.set(root, driver + 1);
-    this.#output.push(net);
+    const count = ++this.#driverCount;
+    if (this.#firstDriver(root) === 0) this.#setFirstDriver(root, count);
     this.#kind.push(kind);
-    this.#start.push(this.#fanin.length);
-    this.#source.push(this.#atSource);
-    this.#offset.push(this.#atOffset);
+    this.#drivers.push(net);
+    this.#drivers.push(this.#fanin.length);
+    this.#drivers.push(this.#atSource);
+    this.#drivers.push(this.#atOffset);
+  }
+
+  #firstDriver(net: number): number {
+    return this.#nets.get(net * NetField.Size + NetField.FirstDriver);
+  }
+
+  #setFirstDriver(net: number, driver: number): void {
+    this.#nets.set(net * NetField.Size + NetField.FirstDriver, driver);
   }
 
   #grow(numbers: number): void {
