@@ -108,9 +108,10 @@ export function powerUpContext(scope: Scope, outside: (net: NetId) => Value): Co
   return contextOf(scope, store, 'variables');
 }
 
+const nothing: ReadonlySet<number> = new Set();
+
 function contextOf(scope: Scope, store: Store, access: Context['access']): Context {
   const { logic } = store;
-  const enclosing = new Set<number>();
   const blocks = new Map();
-  return { scope, logic, store, services, access, depth: 0, enclosing, blocks };
+  return { scope, logic, store, services, access, depth: 0, enclosing: nothing, blocks };
 }

@@ -256,7 +256,7 @@ export const wordsOf = (indices: readonly IndexRange[]): number =>
   indices.reduce((product, { low, high }) => product * (high - low + 1), 1);
 
 function consecutive(first: number, count: number): NetId[] {
-  const nets: NetId[] = [];
-  for (let i = 0; i < count; i++) nets.push(netId(first + i));
+  const nets = [netId(first)];
+  for (let i = 1; i < count; i++) nets.push(netId(first + i));
   return nets;
 }

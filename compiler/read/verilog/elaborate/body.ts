@@ -153,6 +153,11 @@ export class ModuleBody implements OuterHost {
     for (const [index, list] of this.#work.entries()) list.length = lengths[index]!;
   }
 
+  /** Lets go of all work once it is done, since bodies are kept for hierarchical names. */
+  dropWork(): void {
+    for (const list of this.#work) list.length = 0;
+  }
+
   readData(path: string, from: Position): Source | undefined {
     const { source } = this.sources.span(from);
     return this.design.readInclude?.(path, source);

@@ -46,5 +46,7 @@ function compileWith(body: ModuleBody, overrides: Overrides): Template {
   lowerAssigns(body);
   lowerProcesses(body);
   refuseDelayLines(body);
-  return complete(body, boundary);
+  const template = complete(body, boundary);
+  body.dropWork();
+  return template;
 }

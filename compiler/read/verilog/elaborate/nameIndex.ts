@@ -1,3 +1,4 @@
+import { giveBack, SHORT, shortList } from '../../../circuit/shortLists.js';
 import type { NameId } from '../../names.js';
 
 const EMPTY = 0xffffffff;
@@ -16,7 +17,7 @@ export class NameIndex {
   #dense: Int32Array | undefined;
 
   constructor(capacity = 4) {
-    this.#slots = new Uint32Array(2 * capacity).fill(EMPTY);
+    this.#slots = emptySlots(2 * capacity);
   }
 
   /** The number of a name, or -1 if it has none. */
@@ -66,14 +67,20 @@ export class NameIndex {
       this.#slots = new Uint32Array(0);
       return;
     }
-    this.#slots = new Uint32Array(old.length * 2).fill(EMPTY);
+    this.#slots = emptySlots(2 * old.length);
     for (let i = 0; i < old.length; i += 2) {
       if (old[i] === EMPTY) continue;
       const slot = this.#slot(old[i]!);
       this.#slots[slot] = old[i]!;
       this.#slots[slot + 1] = old[i + 1]!;
     }
+    if (old.length <= SHORT) giveBack(old);
   }
+}
+
+/** Room for a power of two of numbers. */
+function emptySlots(length: number): Uint32Array {
+  return (length <= SHORT ? shortList(length) : new Uint32Array(length)).fill(EMPTY);
 }
 
 function longer(list: Int32Array, length: number): Int32Array {

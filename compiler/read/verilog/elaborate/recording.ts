@@ -73,6 +73,8 @@ const DriverField = { Output: 0, Start: 1, Source: 2, Offset: 3, Size: 4 } as co
 const NUMBERS_OF_NET = 4;
 const NUMBERS_OF_DRIVER = 5;
 
+const noNets: readonly NetId[] = [];
+
 const packAttributes = (edge: number, priority: number, initial: number): number =>
   edge | (priority << 1) | (initial << 3);
 
@@ -266,7 +268,11 @@ export class Recording implements GateSink {
   }
 
   /** The nets that write ports read; some may stand there several times. */
-  *writtenNets(): Iterable<NetId> {
+  writtenNets(): Iterable<NetId> {
+    return this.memories.length === 0 ? noNets : this.#writtenNets();
+  }
+
+  *#writtenNets(): Iterable<NetId> {
     for (const { writes } of this.memories) for (const pins of writes) yield* pinNets(pins);
   }
 
