@@ -96,11 +96,15 @@ export const programsOf = (
   passes: PassSwitches = {},
 ): CyclePrograms => plainPrograms(cyclesOf(design, passes), passes, observes);
 
+/** With cycles of more kinds than this, rewriting them all takes longer than it is worth. */
+const MOST_REWRITTEN = 4;
+
 function plainPrograms(
   { cycles: whole, ...rest }: DesignCycles,
-  passes: PassSwitches,
+  chosen: PassSwitches,
   observes = false,
 ): CyclePrograms {
+  const passes = whole.length > MOST_REWRITTEN ? { ...chosen, rewriteCuts: false } : chosen;
   const cycles = observes ? whole.map(withoutNext) : whole;
   // Cycles of several kinds work on the same state bits: none of them may move or turn any.
   const areSeveral = cycles.length > 1 || observes;

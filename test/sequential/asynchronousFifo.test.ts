@@ -89,21 +89,24 @@ const periods = [
 ] as const;
 
 describe('a FIFO between two clocks', () => {
-  it.each(periods)('does what its model does, with periods %i and %i', async (write, read) => {
-    for (const isSwapped of [false, true]) {
-      const clocks = timings(write, read, isSwapped);
-      const random = randomRows(designOf(fifo).layout, 8 * write + read, 400);
-      // All is put, then any of the two is done, then all is taken.
-      const rows = Array.from(random, (word, cycle) =>
-        cycle < 100 ? '10' : cycle < 300 ? binary(word & 3, 2) : '01',
-      );
-      const response = await responseTo(fifo, rows, { timings: clocks });
-      const shown = response.map((row) => row.split(' ').slice(0, 4).join(' '));
-      expect(shown).toEqual(eventList(clocks, rows, model()));
-      const flags = new Set(shown.map((row) => row.slice(0, 3)));
-      expect([...flags]).toEqual(expect.arrayContaining(['0 0', '0 1', '1 0']));
-    }
-  });
+  it.each(periods.slice(0, 3))(
+    'does what its model does, with periods %i and %i',
+    async (write, read) => {
+      for (const isSwapped of [false, true]) {
+        const clocks = timings(write, read, isSwapped);
+        const random = randomRows(designOf(fifo).layout, 8 * write + read, 400);
+        // All is put, then any of the two is done, then all is taken.
+        const rows = Array.from(random, (word, cycle) =>
+          cycle < 100 ? '10' : cycle < 300 ? binary(word & 3, 2) : '01',
+        );
+        const response = await responseTo(fifo, rows, { timings: clocks });
+        const shown = response.map((row) => row.split(' ').slice(0, 4).join(' '));
+        expect(shown).toEqual(eventList(clocks, rows, model()));
+        const flags = new Set(shown.map((row) => row.slice(0, 3)));
+        expect([...flags]).toEqual(expect.arrayContaining(['0 0', '0 1', '1 0']));
+      }
+    },
+  );
 
   it.each(periods)(
     'loses and doubles nothing in 200,000 cycles, with periods %i and %i',
