@@ -22,10 +22,10 @@ export function orderSinks(logic: Logic): Literal[] {
   for (const sink of sinks) {
     group.push(sink);
     if (cones.add(sink) < GROUP_ENTRIES) continue;
-    order.push(...cones.takeGreedily(group));
+    cones.takeGreedily(group, order);
     group = [];
   }
-  order.push(...cones.takeGreedily(group));
+  cones.takeGreedily(group, order);
   return order;
 }
 
@@ -62,13 +62,12 @@ class Cones {
     return this.#nodes.length;
   }
 
-  /** The sinks of the group in greedy order; empties the group. */
-  takeGreedily(group: readonly Literal[]): Literal[] {
+  /** Adds the sinks of the group to `order`, greedily; empties the group. */
+  takeGreedily(group: readonly Literal[], order: Literal[]): void {
     const starts = this.#starts;
     const missing = Uint32Array.from(group, (_, i) => starts[i + 1]! - starts[i]!);
     const queue = new BucketQueue(missing);
     const users = this.#usersByNode();
-    const order: Literal[] = [];
     for (let sink = queue.takeLeast(); sink !== -1; sink = queue.takeLeast()) {
       order.push(group[sink]!);
       for (let i = starts[sink]!; i < starts[sink + 1]!; i++) {
@@ -82,7 +81,6 @@ class Cones {
     }
     this.#nodes = [];
     this.#starts = [0];
-    return order;
   }
 
   // For each node, the sinks of the group whose cones hold it.

@@ -3,7 +3,7 @@ import { describe, expect, it } from 'vitest';
 import { cyclesOf } from '../../compiler/compile.js';
 import { Source } from '../../compiler/diagnostics/source.js';
 import { checkLogic } from '../../compiler/logic/check.js';
-import { type Logic, LogicOp } from '../../compiler/logic/logic.js';
+import { FALSE, type Logic, LogicOp } from '../../compiler/logic/logic.js';
 import { sinksOf } from '../../compiler/logic/sinks.js';
 import { choosePolarity } from '../../compiler/passes/choosePolarity.js';
 import { compact } from '../../compiler/passes/compact.js';
@@ -88,6 +88,12 @@ describe('orderSinks', () => {
     holds((logic) => {
       expect([...orderSinks(logic)].sort()).toEqual(sinksOf(logic).sort());
     });
+  });
+
+  it('takes more sinks than a call has arguments', () => {
+    const [circuit] = fc.sample(randomCircuit(), { numRuns: 1, seed: 1 });
+    const logic = { ...logicOf(circuit!), outputs: new Array<number>(300_000).fill(FALSE) };
+    expect(orderSinks(logic)).toHaveLength(sinksOf(logic).length);
   });
 });
 
