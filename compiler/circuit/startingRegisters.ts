@@ -5,7 +5,7 @@ import { NO_NET } from './ids.js';
 import { X } from './values.js';
 
 // Inputs are looked at until so many fan-in nets have been, for each one of the circuit.
-const EFFORT = 4;
+const EFFORT = 1;
 const LEAST_EFFORT = 1_000_000;
 
 /** How resets are called, whatever stands before and behind: `rst_n`, `sys_reset`, `clrb`, `arst0`. */
@@ -51,11 +51,12 @@ function searchResets(circuit: Circuit, clocks: ClockPorts, open: Set<number>): 
     clocks.ports.map(({ net }) => net),
   );
   const effort = Math.max(LEAST_EFFORT, EFFORT * (circuit.netCount + circuit.fanin.length));
-  /** What holding an input at a level makes known; `visit` looks on meanwhile. */
-  const madeKnown = (input: number, level: number, visit?: () => void): Set<number> => {
+  /** Outputs in `open` that holding an input at a level makes known; `visit` looks on meanwhile. */
+  const madeKnown = (input: number, level: number, visit?: () => void): number[] => {
     const before = held.count;
     held.hold(input, level);
-    const known = new Set(held.knownSince(before));
+    const known: number[] = [];
+    for (const net of held.knownSince(before)) if (open.has(net)) known.push(net);
     visit?.();
     held.release(before);
     return known;
@@ -65,22 +66,24 @@ function searchResets(circuit: Circuit, clocks: ClockPorts, open: Set<number>): 
   };
   close(held.knownSince(0));
   const inputs = dataInputs(circuit, clocks);
-  const openNow = (known: Set<number>): number[] => [...known].filter((net) => open.has(net));
   for (const { net: reset } of inputs.filter(({ name }) => RESET_NAME.test(name))) {
-    const level = Number(madeKnown(reset, 1).size > madeKnown(reset, 0).size);
-    close(madeKnown(reset, level));
+    // Its active level decides more.
+    const counts: number[] = [];
+    const [low, high] = [0, 1].map((each) => madeKnown(reset, each, () => counts.push(held.count)));
+    const level = Number(counts[1]! > counts[0]!);
+    close(level === 1 ? high! : low!);
     for (const { net } of inputs) {
       for (const other of [0, 1]) {
         if (open.size === 0 || held.work > effort) return;
         let both: number[] = [];
         madeKnown(reset, level, () => {
-          both = openNow(madeKnown(net, other));
+          both = madeKnown(net, other);
         });
         if (both.length === 0) continue;
         // What follows without the reset, or whatever the other input is, is data that passes.
-        const alone = madeKnown(net, other);
+        const alone = new Set(madeKnown(net, other));
         madeKnown(reset, level, () => {
-          const otherwise = madeKnown(net, 1 - other);
+          const otherwise = new Set(madeKnown(net, 1 - other));
           close(both.filter((each) => !alone.has(each) && !otherwise.has(each)));
         });
       }
