@@ -1,5 +1,6 @@
 import { TarjanSearch } from '../../circuit/tarjan.js';
 import { type Logic, LogicOp, nodeOf } from '../../logic/logic.js';
+import { LANES } from './packs.js';
 
 /** Fewer nodes than this are no island. */
 const LEAST = 1000;
@@ -15,8 +16,8 @@ const LEAST_REPEATED = 0.75;
  * of which depends on all others, over registers, such as the cores of a chip.
  *
  * Islands have little to do with each other: vectors that hold lanes of several bring together what
- * is wanted apart. Only where there are many equal ones, and these repeat too little within
- * themselves, they are none. `shape` is equal for nodes that look alike, of which `least` at least
+ * is wanted apart. Only where there are enough equal ones to fill all lanes, or many that repeat too
+ * little within themselves, they are none. `shape` is equal for nodes that look alike, of which `least` at least
  * are worth packing.
  */
 export function islandsOf(logic: Logic, shape: Uint32Array, least: number): Uint32Array {
@@ -33,8 +34,8 @@ export function islandsOf(logic: Logic, shape: Uint32Array, least: number): Uint
   const copies = new Map<number, number>();
   for (const { length } of large) copies.set(length, (copies.get(length) ?? 0) + 1);
   for (const nodes of large) {
-    const areMany = copies.get(nodes.length)! >= MANY;
-    if (areMany && !repeats(logic, nodes, shape, least)) continue;
+    const equal = copies.get(nodes.length)!;
+    if (equal >= LANES || (equal >= MANY && !repeats(logic, nodes, shape, least))) continue;
     count++;
     for (const node of nodes) islands[node] = count;
   }
