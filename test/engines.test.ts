@@ -1,32 +1,21 @@
 import fc from 'fast-check';
-import { describe, expect, it } from 'vitest';
+import { describe, it } from 'vitest';
 import type { Circuit } from '../compiler/circuit/circuit.js';
-import { powerUpState } from '../compiler/circuit/powerUp.js';
 import { designOf } from '../compiler/compile.js';
-import { courseOf, enginesOf } from './support/engines.js';
+import { expectAgreement } from './support/agreement.js';
 import { randomBanks } from './support/randomBanks.js';
 import { type RandomCircuitOptions, randomCircuit } from './support/randomCircuit.js';
-import { randomRows } from './support/responses.js';
 
 const SEED = 20260101;
 const CYCLES = 40;
 
-/** Runs one circuit on all engines with the same stimulus and expects the same of each. */
-async function expectAgreement(circuit: Circuit, threeValued: boolean, seed: number) {
-  const design = designOf(circuit, { threeValued });
-  const rows = randomRows(design.layout, seed, CYCLES);
-  const state = powerUpState(circuit, threeValued ? 'unknown' : 'random', seed);
-  const { reference, others } = await enginesOf(design);
-  const expected = courseOf(reference, state, rows, CYCLES);
-  for (const [name, engine] of others) {
-    expect(courseOf(engine, state, rows, CYCLES), name).toEqual(expected);
-  }
-}
+const agrees = (circuit: Circuit, threeValued: boolean, seed: number): Promise<void> =>
+  expectAgreement(designOf(circuit, { threeValued }), seed, CYCLES);
 
 async function holdsFor(options: RandomCircuitOptions, threeValued: boolean, numRuns: number) {
   await fc.assert(
     fc.asyncProperty(randomCircuit(options), fc.nat(1e6), (circuit, seed) =>
-      expectAgreement(circuit, threeValued, seed),
+      agrees(circuit, threeValued, seed),
     ),
     { seed: SEED, numRuns },
   );
@@ -43,7 +32,7 @@ describe('the engines agree on random circuits', () => {
   it('with divided clocks', () =>
     holdsFor({ clocking: 'divided', latches: true, asynchronous: true }, false, 60));
   it('with banks of registers', () =>
-    fc.assert(fc.asyncProperty(randomBanks(), fc.boolean(), fc.nat(1e6), expectAgreement), {
+    fc.assert(fc.asyncProperty(randomBanks(), fc.boolean(), fc.nat(1e6), agrees), {
       seed: SEED,
       numRuns: 50,
     }));

@@ -2,11 +2,10 @@ import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { findClockPorts } from '../compiler/circuit/clockPorts.js';
 import { type ClockTiming, timedSchedule } from '../compiler/circuit/clockSchedule.js';
-import { powerUpState } from '../compiler/circuit/powerUp.js';
-import { type Design, designOf } from '../compiler/compile.js';
+import { designOf } from '../compiler/compile.js';
+import { expectAgreement } from './support/agreement.js';
 import { courseOf, enginesOf } from './support/engines.js';
 import { randomCircuit } from './support/randomCircuit.js';
-import { randomRows } from './support/responses.js';
 import { smallCircuit } from './support/smallCircuit.js';
 
 const timing = (port: string) =>
@@ -15,17 +14,6 @@ const timing = (port: string) =>
     .map(({ period, offset }): ClockTiming => ({ port, period, offset: offset % period }));
 
 const CYCLES = 50;
-
-async function expectAgreement(design: Design, seed: number) {
-  const rows = randomRows(design.layout, seed, CYCLES);
-  const mode = design.layout.threeValued ? 'unknown' : 'random';
-  const state = powerUpState(design.circuit, mode, seed);
-  const { reference, others } = await enginesOf(design);
-  const expected = courseOf(reference, state, rows, CYCLES);
-  for (const [name, engine] of others) {
-    expect(courseOf(engine, state, rows, CYCLES), name).toEqual(expected);
-  }
-}
 
 describe('the engines agree', () => {
   it('with two clocks of any periods and offsets', async () => {
@@ -42,7 +30,7 @@ describe('the engines agree', () => {
           const known = findClockPorts(circuit).ports.map(({ name }) => name);
           const timings = [first, second].filter(({ port }) => known.includes(port));
           const timed = timings.length > 0 ? { timings } : {};
-          return expectAgreement(designOf(circuit, { ...timed, threeValued }), seed);
+          return expectAgreement(designOf(circuit, { ...timed, threeValued }), seed, CYCLES);
         },
       ),
       { seed: 52, numRuns: 60 },

@@ -2,13 +2,18 @@ import type binaryen from 'binaryen';
 import type { Pointers } from './blockEmitter.js';
 import { LEAVE } from './fence.js';
 
-/** Locals of the exported `run`, parameters first. */
-export const RunLocal = {
+/** Parameters of the exported `run`, and of what stands in its place. */
+export const RunParameter = {
   Cycles: 0,
   Row: 1,
   RowStep: 2,
   Response: 3,
   ResponseStep: 4,
+} as const;
+
+/** Locals of `run`, parameters first. */
+export const RunLocal = {
+  ...RunParameter,
   Current: 5,
   Next: 6,
   Left: 7,

@@ -1,6 +1,7 @@
 import type binaryen from 'binaryen';
 import { type ModelLayout, rowStride } from '../../runtime/layout.js';
 import type { CyclePrograms } from '../program/program.js';
+import { RunParameter } from './runLoop.js';
 
 /** Input bits of the widest rows of a table; of each state it has an entry for each of their values. */
 const MOST_INPUT_BITS = 12;
@@ -27,11 +28,7 @@ export function canHaveTable(
 }
 
 const Local = {
-  Cycles: 0,
-  Row: 1,
-  RowStep: 2,
-  Response: 3,
-  ResponseStep: 4,
+  ...RunParameter,
   Place: 5,
   Left: 6,
   State: 7,

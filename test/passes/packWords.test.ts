@@ -1,6 +1,5 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { powerUpState } from '../../compiler/circuit/powerUp.js';
 import { designOf, packedProgramsOf } from '../../compiler/compile.js';
 import type { Literal, Logic } from '../../compiler/logic/logic.js';
 import { LogicBuilder } from '../../compiler/logic/logicBuilder.js';
@@ -8,10 +7,9 @@ import { growPacks } from '../../compiler/passes/packWords/growPacks.js';
 import { NO_NODE } from '../../compiler/passes/packWords/packs.js';
 import { breakCircles, stagesOf } from '../../compiler/passes/packWords/units.js';
 import { isNumber, VectorOp } from '../../compiler/program/vectorCode.js';
-import { courseOf, enginesOf } from '../support/engines.js';
+import { expectAgreement } from '../support/agreement.js';
 import { logicOf } from '../support/logic.js';
 import { randomWords } from '../support/randomWords.js';
-import { randomRows } from '../support/responses.js';
 
 const CYCLES = 40;
 
@@ -27,13 +25,7 @@ describe('packed programs', () => {
         for (const { op } of packedProgramsOf(design).programs[0]!.vectors?.steps ?? []) {
           seen.set(op, (seen.get(op) ?? 0) + 1);
         }
-        const rows = randomRows(design.layout, seed, CYCLES);
-        const state = powerUpState(circuit, threeValued ? 'unknown' : 'random', seed);
-        const { reference, others } = await enginesOf(design);
-        const expected = courseOf(reference, state, rows, CYCLES);
-        for (const [name, engine] of others) {
-          expect(courseOf(engine, state, rows, CYCLES), name).toEqual(expected);
-        }
+        await expectAgreement(design, seed, CYCLES);
       },
     );
     await fc.assert(agrees, { seed: 7, numRuns: 60 });

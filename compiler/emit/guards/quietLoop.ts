@@ -1,6 +1,7 @@
 import type binaryen from 'binaryen';
 import { type ModelLayout, rowStride } from '../../../runtime/layout.js';
 import type { CyclePrograms, Program } from '../../program/program.js';
+import { RunParameter } from '../runLoop.js';
 
 const GROUP = 16;
 
@@ -47,11 +48,7 @@ export interface QuietPlace {
 const globals = { quiet: 0, pace: 1, moved: 0 } as const;
 
 const Local = {
-  Cycles: 0,
-  Row: 1,
-  RowStep: 2,
-  Response: 3,
-  ResponseStep: 4,
+  ...RunParameter,
   Left: 5,
   Count: 6,
   Ran: 7,

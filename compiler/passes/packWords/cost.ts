@@ -11,6 +11,10 @@ export const Cost = {
   permute: 5,
   /** Joining lanes of one more vector. */
   join: 11,
+  /** Bits of one more vector as the lowest ones of whole bytes. */
+  stack: 3,
+  /** Storing sixteen bits of the response row. */
+  half: 4,
   /** Storing one bit that is computed by itself, for a vector to hold it. */
   gather: 1.5,
   /** Copying a bit of the state, or an input, for that. */

@@ -1,23 +1,12 @@
 import { nodeOf } from '../../logic/logic.js';
 import type { RowSink } from '../../program/vectorCode.js';
+import { Cost } from './cost.js';
 import { LANES, type Packs, type Tuple } from './packs.js';
 import type { Source, VectorPlan } from './vectorPlan.js';
 
 /** Bits of a byte, and bytes of a word, of the response row. */
 const BITS = 8;
 const BYTES = 4;
-
-/** What things cost, in instructions. */
-const Cost = {
-  /** Bits of one more vector as the lowest ones of whole bytes. */
-  stack: 3,
-  /** Bringing the lanes of one vector into another order. */
-  permute: 5,
-  /** Joining lanes of one more vector. */
-  join: 11,
-  /** Storing sixteen bits of the row. */
-  half: 4,
-} as const;
 
 /** Up to sixteen bytes of the row of which each bit comes from one pack. */
 interface Stack {

@@ -1,15 +1,13 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { powerUpState } from '../../../compiler/circuit/powerUp.js';
 import { designOf, packedProgramsOf } from '../../../compiler/compile.js';
 import { randomWords, simulate } from '../../../compiler/logic/simulate.js';
 import { findAdditions } from '../../../compiler/passes/additions/additions.js';
 import { compact } from '../../../compiler/passes/compact.js';
 import { isNumber, VectorOp } from '../../../compiler/program/vectorCode.js';
-import { courseOf, enginesOf } from '../../support/engines.js';
+import { expectAgreement } from '../../support/agreement.js';
 import { logicOf } from '../../support/logic.js';
 import { randomSums } from '../../support/randomSums.js';
-import { randomRows } from '../../support/responses.js';
 
 const CYCLES = 30;
 
@@ -56,13 +54,7 @@ describe('programs with additions', () => {
         for (const { op } of packedProgramsOf(design).programs[0]!.vectors?.steps ?? []) {
           if (isNumber(op)) seen.set(op, (seen.get(op) ?? 0) + 1);
         }
-        const rows = randomRows(design.layout, seed, CYCLES);
-        const state = powerUpState(circuit, threeValued ? 'unknown' : 'random', seed);
-        const { reference, others } = await enginesOf(design);
-        const expected = courseOf(reference, state, rows, CYCLES);
-        for (const [name, engine] of others) {
-          expect(courseOf(engine, state, rows, CYCLES), name).toEqual(expected);
-        }
+        await expectAgreement(design, seed, CYCLES);
       },
     );
     await fc.assert(agrees, { seed: 5, numRuns: 20 });
