@@ -10,7 +10,7 @@ import type { Findings, Outlet, OutletBlock, RunEnd, Stop } from './outlet.js';
 const MOST_TOLD = 50;
 
 /** Why a run ends that is not as expected. */
-const DEPARTS = 'departs from the expectation';
+export const DEPARTS = 'departs from the expectation';
 
 /** What happens at a departure. */
 export interface DepartureOptions {

@@ -1,4 +1,5 @@
 import { counted, figure } from '../../report/figures.js';
+import { DEPARTS } from './comparison.js';
 import type {
   Findings,
   Outlet,
@@ -67,8 +68,6 @@ class StopOutlet implements Outlet {
   readonly #counts: number[];
   readonly #past: number;
   #holding: number;
-  /** Cycles looked at, those before a checkpoint included. */
-  #taken = 0;
 
   constructor(
     conditions: readonly StopCondition[],
@@ -95,7 +94,6 @@ class StopOutlet implements Outlet {
   take({ firstCycle, cycles, watched }: OutletBlock): Stop | undefined {
     const { flagWord, flagBit, stride } = this.#place;
     const mask = this.#mask;
-    this.#taken = firstCycle + cycles;
     let holding = this.#holding;
     for (let row = 0, at = flagWord; row < cycles; row++, at += stride) {
       const now = (watched[at]! >>> flagBit) & mask;
@@ -117,8 +115,8 @@ class StopOutlet implements Outlet {
       const { lookAround } = this.#options;
       return lookAround ? { notes: [`look around with: ${lookAround(stopped.cycle)}`] } : {};
     }
-    // One that judges has cut the block, of which all has been counted.
-    if (cycles < this.#taken) return {};
+    // What has been counted ends with a block, and a departure stands anywhere in one.
+    if (stopped?.reason === DEPARTS) return {};
     const past = this.#past < 0 ? '' : `after cycle ${figure(this.#past)}, `;
     const told = this.#conditions.map(({ text }, i) => `${text} ${this.#times(i)}`);
     return { notes: told.map((text) => `${text} ${past}in ${counted(cycles, 'cycle')}`) };
