@@ -4,12 +4,17 @@ import { HeldInputs } from './heldInputs.js';
 import { NO_NET } from './ids.js';
 import { X } from './values.js';
 
-// Inputs are looked at until so many fan-in nets have been, for each one of the circuit.
-const EFFORT = 1;
+/** Inputs are looked at until so many fan-in nets have been, or as many as the circuit has. */
 const LEAST_EFFORT = 1_000_000;
 
-/** How resets are called, whatever stands before and behind: `rst_n`, `sys_reset`, `clrb`, `arst0`. */
-const RESET_NAME = /(?:^|[_./[])n?[as]?(?:re?se?t|rst|clr|clear)(?:$|[^a-z]|[nbi](?:$|[^a-z]))/i;
+/** The words of a name: they stand between other characters, and before a capital letter. */
+const WORD_ENDS = /[^a-zA-Z]+|(?<=[a-z])(?=[A-Z])/;
+
+/** A word that names a reset: `rst`, `arst`, `HRESETn`, `clrb`, `resetall`. */
+const RESET_WORD = /^[a-z]?(?:reset|rset|rst|clr|clear)(?:all|[nbi]{0,2})$/i;
+
+const isResetName = (name: string): boolean =>
+  name.split(WORD_ENDS).some((word) => RESET_WORD.test(word));
 
 /** What `openStarts` looks at. */
 interface Clocked {
@@ -17,23 +22,13 @@ interface Clocked {
   readonly clocks: ClockPorts;
 }
 
-const known = new WeakMap<Circuit, Uint32Array>();
-
 /**
  * The registers whose start is left open: they have neither an initial value nor a set or reset,
  * and no synchronous reset either, which is an input with the name of one that brings them to a
  * known value, whatever all else is, when it is held at its active level, if need be beside another
  * input at one level (as a scan enable). The search is cut off by its effort, so that it is linear.
- * Worked out once for each circuit.
  */
-export function openStarts(design: Clocked): Uint32Array {
-  const { circuit } = design;
-  const found = known.get(circuit) ?? findOpenStarts(design);
-  known.set(circuit, found);
-  return found;
-}
-
-function findOpenStarts({ circuit, clocks }: Clocked): Uint32Array {
+export function openStarts({ circuit, clocks }: Clocked): Uint32Array {
   const { registers } = circuit;
   const open = new Set<number>();
   for (let r = 0; r < registers.count; r++) {
@@ -50,45 +45,46 @@ function searchResets(circuit: Circuit, clocks: ClockPorts, open: Set<number>): 
     circuit,
     clocks.ports.map(({ net }) => net),
   );
-  const effort = Math.max(LEAST_EFFORT, EFFORT * (circuit.netCount + circuit.fanin.length));
+  const effort = Math.max(LEAST_EFFORT, circuit.netCount + circuit.fanin.length);
   /** Outputs in `open` that holding an input at a level makes known; `visit` looks on meanwhile. */
   const madeKnown = (input: number, level: number, visit?: () => void): number[] => {
     const before = held.count;
     held.hold(input, level);
-    const known: number[] = [];
-    for (const net of held.knownSince(before)) if (open.has(net)) known.push(net);
+    const found = [...held.knownSince(before)].filter((net) => open.has(net));
     visit?.();
     held.release(before);
-    return known;
+    return found;
   };
-  const close = (known: Iterable<number>): void => {
-    for (const net of known) open.delete(net);
+  const close = (nets: Iterable<number>): void => {
+    for (const net of nets) open.delete(net);
   };
   close(held.knownSince(0));
   const inputs = dataInputs(circuit, clocks);
-  for (const { net: reset } of inputs.filter(({ name }) => RESET_NAME.test(name))) {
+  for (const { net: reset } of inputs.filter(({ name }) => isResetName(name))) {
     // Its active level decides more.
     const counts: number[] = [];
-    const [low, high] = [0, 1].map((each) => madeKnown(reset, each, () => counts.push(held.count)));
+    const levels = [0, 1].map((each) => madeKnown(reset, each, () => counts.push(held.count)));
     const level = Number(counts[1]! > counts[0]!);
-    close(level === 1 ? high! : low!);
-    for (const { net } of inputs) {
-      for (const other of [0, 1]) {
-        if (open.size === 0 || held.work > effort) return;
-        let both: number[] = [];
-        madeKnown(reset, level, () => {
-          both = madeKnown(net, other);
-        });
-        if (both.length === 0) continue;
-        // What follows without the reset, or whatever the other input is, is data that passes.
-        const alone = new Set(madeKnown(net, other));
-        madeKnown(reset, level, () => {
-          const otherwise = new Set(madeKnown(net, 1 - other));
-          close(both.filter((each) => !alone.has(each) && !otherwise.has(each)));
-        });
+    close(levels[level]!);
+    const beside: { input: number; level: number; nets: number[] }[] = [];
+    madeKnown(reset, level, () => {
+      for (const { net: input } of inputs) {
+        if (open.size === 0 || held.work > effort) break;
+        const [low, high] = [madeKnown(input, 0), madeKnown(input, 1)];
+        // What follows from either level is data that passes, and no reset.
+        beside.push({ input, level: 0, nets: without(low, high) });
+        beside.push({ input, level: 1, nets: without(high, low) });
       }
+    });
+    for (const { input, level: other, nets } of beside) {
+      if (nets.length > 0) close(without(nets, madeKnown(input, other)));
     }
   }
+}
+
+function without(nets: readonly number[], others: readonly number[]): number[] {
+  const taken = new Set(others);
+  return nets.filter((net) => !taken.has(net));
 }
 
 /** The input bits that are no clocks. */

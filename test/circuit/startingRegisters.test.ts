@@ -98,6 +98,35 @@ describe('registers whose start is left open', () => {
   });
 });
 
+describe('a synchronous reset is told by its name', () => {
+  const openWith = (name: string): number => {
+    const circuit = circuitOf(
+      `module t (input clk, ${name}, output reg q); always @(posedge clk) q <= q & ${name}; endmodule`,
+    );
+    return openStarts(designOf(circuit)).length;
+  };
+
+  it.each([
+    'rst_n',
+    'reset',
+    'HRESETn',
+    'PRESETn',
+    'sysReset',
+    'sys_rst',
+    'xrst',
+    'nrst',
+    'rst_ni',
+    'clrb',
+    'arst0',
+    'resetall',
+    '\\core/rst ',
+  ])('such as %s', (name) => expect(openWith(name)).toBe(0));
+
+  it.each(['rest', 'first', 'burst_n', 'nuclear', 'en'])('and not %s', (name) =>
+    expect(openWith(name)).toBe(1),
+  );
+});
+
 describe('inputs that are held', () => {
   it('make known what a run with all else unknown makes known, as the same', () => {
     const options = {
