@@ -158,7 +158,7 @@ function networkOf(
   members: readonly number[],
   places: ReadonlyMap<number, Place>,
 ): Network {
-  const lowest = Math.min(...members.map((member) => places.get(member)!.column));
+  const lowest = members.reduce((least, member) => Math.min(least, places.get(member)!.column), 0);
   const inputs: Literal[][] = [];
   const outputs: NetworkOutput[] = [];
   const isInner = (from: number, literal: Literal): boolean => {
