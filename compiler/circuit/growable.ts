@@ -1,4 +1,4 @@
-import { giveBack, SHORT, shortList } from './shortLists.js';
+import { giveBack, numberList, SHORT } from './shortLists.js';
 
 const LONG = 4096;
 
@@ -105,11 +105,11 @@ export class GrowableUint32 {
 
   #resize(capacity: number): void {
     const old = this.#data;
-    const larger = capacity <= SHORT ? shortList(capacity) : new Uint32Array(capacity);
+    const larger = numberList(capacity);
     if (this.#length > MANY) larger.set(old.subarray(0, this.#length));
     else for (let i = 0; i < this.#length; i++) larger[i] = old[i]!;
     this.#data = larger;
-    if (old.length > 0 && old.length <= SHORT) giveBack(old);
+    giveBack(old);
   }
 }
 

@@ -14,8 +14,8 @@ export const TICKS = 3;
  * unknown, registers among it.
  *
  * Values of 0, 1 and x only ever go from x to 0 or 1, so that each gate and register settles once
- * (ternary simulation, Eichelberger 1965). What a net becomes
- * is handed on to its readers alone, and taken back by `release`.
+ * (ternary simulation, Eichelberger 1965). What a net becomes is handed on to its readers alone,
+ * and taken back by `release`.
  */
 export class HeldInputs {
   readonly #circuit: Circuit;

@@ -1,24 +1,27 @@
+/** Length of a page in numbers. */
 const PAGE = 4096;
 
-/** From this length on, a list has an array buffer of its own. */
+/** Longer lists have an array buffer of their own. */
 export const SHORT = 1024;
 
 // So many lists of each length are kept for others, so that these do not hold on to many pages.
 const MOST_KEPT = 64;
 
 let page = new ArrayBuffer(0);
+/** Bytes of the page that are given away. */
 let used = 0;
 
 /** Lists that are no longer in use, by the logarithm of their length. */
 const kept: Uint32Array[][] = Array.from({ length: 32 - Math.clz32(SHORT) }, () => []);
 
 /**
- * An array for at least `least` numbers, `SHORT` of them at most, whatever stands in it.
+ * An array for at least `least` numbers, whatever stands in it.
  *
- * It is a stretch of a page that many of them share: a design may have a million of them, and an
- * array buffer for each would cost far more than what it holds.
+ * A short one is a stretch of a page that many of them share: a design may have a million of them,
+ * and an array buffer for each would cost far more than what it holds.
  */
-export function shortList(least: number): Uint32Array {
+export function numberList(least: number): Uint32Array {
+  if (least > SHORT) return new Uint32Array(least);
   const logarithm = 32 - Math.clz32(Math.max(least, 4) - 1);
   const again = kept[logarithm]!.pop();
   if (again !== undefined) return again;
@@ -32,8 +35,9 @@ export function shortList(least: number): Uint32Array {
   return list;
 }
 
-/** Gives back what `shortList` made. */
+/** Gives back what `numberList` made, or a list without room. */
 export function giveBack(list: Uint32Array): void {
+  if (list.length === 0 || list.length > SHORT) return;
   const lists = kept[31 - Math.clz32(list.length)]!;
   if (lists.length < MOST_KEPT) lists.push(list);
 }

@@ -12,10 +12,9 @@ type Unary = Extract<Expression, { kind: 'unary' }>;
 const MOST_LEVELS = 40;
 
 /**
- * The value of an expression of plain numbers, parameters, functions of these and variables that were
- * assigned a number,
- * in the width and sign of its context, as `lower` gives it in bits; undefined for any other, and
- * where an x comes in.
+ * The value of an expression of plain numbers, parameters, functions of these and variables that
+ * were assigned a number, in the width and sign of its context, as `lower` gives it in bits;
+ * undefined for any other, and where an x comes in.
  *
  * Loops ask for such values by the hundred thousand.
  */

@@ -38,13 +38,9 @@ export function steeringVariables(loop: Loop, context: Context): SignalBinding[]
   };
   if (loop.step !== undefined) note(loop.step);
   walk(loop.body, (node) => {
-    if (node.kind === 'assign') note(node as unknown as AssignStatement);
-    if (
-      node.kind === 'block' &&
-      (node as unknown as { declarations: unknown[] }).declarations.length > 0
-    ) {
-      isClear = false;
-    }
+    const part = node as Statement;
+    if (part.kind === 'assign') note(part);
+    if (part.kind === 'block' && part.declarations.length > 0) isClear = false;
     return true;
   });
   const steering = new Map<number, SignalBinding>();
@@ -82,20 +78,11 @@ function assignedNames(target: Expression): NameExpression[] {
 function conditionsIn(body: Statement): unknown[] {
   const conditions: unknown[] = [];
   walk(body, (node) => {
-    const { condition, subject, items, count } = node as {
-      condition?: Expression;
-      subject?: Expression;
-      items?: readonly { labels: readonly Expression[] }[];
-      count?: Expression;
-    };
-    if (node.kind === 'case')
-      conditions.push(
-        subject,
-        items!.map(({ labels }) => labels),
-      );
-    else if (['if', 'for', 'while', 'repeat'].includes(node.kind as string)) {
-      conditions.push(condition ?? count);
-    }
+    const part = node as Statement;
+    if (part.kind === 'case') conditions.push(part.subject, ...part.items.map((i) => i.labels));
+    else if (part.kind === 'if' || part.kind === 'for' || part.kind === 'while') {
+      conditions.push(part.condition);
+    } else if (part.kind === 'repeat') conditions.push(part.count);
     return true;
   });
   return conditions;

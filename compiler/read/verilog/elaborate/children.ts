@@ -30,8 +30,8 @@ const noImports: readonly Import[] = [];
 const noMemories: readonly MemoryImport[] = [];
 
 /**
- * The instances inside a module, as records of numbers: which template, under which name, and the parent's
- * net for each net of the template's boundary (`NO_NET` where unconnected).
+ * The instances inside a module, as records of numbers: which template, under which name, and the
+ * parent's net for each net of the template's boundary (`NO_NET` where unconnected).
  */
 export class Children {
   readonly #budget: Budget | undefined;
@@ -164,7 +164,9 @@ export class Children {
     return this.#memories?.get(child) ?? noMemories;
   }
 
-  /** The parent's memory that is one with a memory of the child; made by `make` when first asked for. */
+  /**
+   * The parent's memory that is one with a memory of the child; made by `make` when first asked for.
+   */
   importMemory(child: number, childMemory: number, make: () => HeldMemory): HeldMemory {
     const known = this.memoryImports(child).find((each) => each.childMemory === childMemory);
     if (known !== undefined) return known.memory;

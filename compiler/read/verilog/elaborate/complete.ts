@@ -65,7 +65,8 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
   };
   const { driven } = design;
   markDriven(body, usage);
-  if (mayBeUndriven(body, usage, boundary)) {
+  for (const net of boundary.nets) usage.markPort(net);
+  if (mayBeUndriven(body, usage)) {
     design.atEnd(() => reportUndriven(body, usage, (net) => driven.has(template, net)));
   }
   return template;

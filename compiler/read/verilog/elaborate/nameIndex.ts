@@ -1,4 +1,4 @@
-import { giveBack, SHORT, shortList } from '../../../circuit/shortLists.js';
+import { giveBack, numberList } from '../../../circuit/shortLists.js';
 import type { NameId } from '../../names.js';
 
 const EMPTY = 0xffffffff;
@@ -74,13 +74,13 @@ export class NameIndex {
       this.#slots[slot] = old[i]!;
       this.#slots[slot + 1] = old[i + 1]!;
     }
-    if (old.length <= SHORT) giveBack(old);
+    giveBack(old);
   }
 }
 
 /** Room for a power of two of numbers. */
 function emptySlots(length: number): Uint32Array {
-  return (length <= SHORT ? shortList(length) : new Uint32Array(length)).fill(EMPTY);
+  return numberList(length).fill(EMPTY);
 }
 
 function longer(list: Int32Array, length: number): Int32Array {

@@ -30,8 +30,8 @@ export const Pin = { Control: 0, Data: 1, Set: 2, Reset: 3, Attributes: 4 } as c
 export const DROPPED = 255;
 
 /**
- * Kind of a driver that is a part of a bus; only that of a dropped one is greater. Its fan-in list has these three numbers: `NO_NET` as
- * `Control` for always, as `Traits` what `packTraits` makes.
+ * Kind of a driver that is a part of a bus; only that of a dropped one is greater. Its fan-in list
+ * has these three numbers: `NO_NET` as `Control` for always, as `Traits` what `packTraits` makes.
  */
 export const BUS_PART = 254;
 export const BusPin = { Data: 0, Control: 1, Traits: 2 } as const;
@@ -69,9 +69,9 @@ export interface RecordedMemory {
 const NetField = { Source: 0, Offset: 1, FirstDriver: 2, Size: 3 } as const;
 const DriverField = { Output: 0, Start: 1, Source: 2, Offset: 3, Size: 4 } as const;
 
-// What a net and a driver take in the columns below.
-const NUMBERS_OF_NET = 4;
-const NUMBERS_OF_DRIVER = 5;
+// What a net and a driver cost the budget: their record, and `#declared` or `#kind` beside it.
+const NUMBERS_OF_NET = NetField.Size + 1;
+const NUMBERS_OF_DRIVER = DriverField.Size + 1;
 
 const noNets: readonly NetId[] = [];
 
@@ -93,8 +93,8 @@ export const unpackAttributes = (packed: number) => ({
  */
 export class Recording implements GateSink {
   readonly #unions = new Unions();
-  // A record of each net and of each driver: a design may have thousands of small modules, for which
-  // a column for each field would cost far more than what it holds.
+  // A record of each net and of each driver: a design may have thousands of small modules, for
+  // which a column for each field would cost far more than what it holds.
   readonly #nets = new GrowableUint32(8 * NetField.Size);
   // 1 for a net that a declaration has named.
   readonly #declared = new GrowableUint8(8);

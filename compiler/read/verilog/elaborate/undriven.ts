@@ -2,7 +2,6 @@ import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
 import { bitList } from './blockNames.js';
 import type { BlockScope } from './blockScope.js';
 import type { ModuleBody, OpenInput } from './body.js';
-import type { Boundary } from './ports.js';
 import { Flag, SymbolKind } from './symbols.js';
 import { Drive } from './template.js';
 import type { Usage } from './usage.js';
@@ -41,13 +40,8 @@ export function reportUndriven(
   }
 }
 
-/** Whether `reportUndriven` may find anything; `usage` is told which nets are those of ports. */
-export function mayBeUndriven(
-  { openInputs }: ModuleBody,
-  usage: Usage,
-  { nets }: Boundary,
-): boolean {
-  for (const net of nets) usage.markPort(net);
+/** Whether `reportUndriven` may find anything; `usage` must know the nets of ports. */
+export function mayBeUndriven({ openInputs }: ModuleBody, usage: Usage): boolean {
   if (openInputs.length > 0) return true;
   for (let net = 0; net < usage.netCount; net++) if (usage.isOpen(net)) return true;
   return false;

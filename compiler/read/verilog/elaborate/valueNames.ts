@@ -1,7 +1,7 @@
 import type { NetId } from '../../../circuit/ids.js';
 import type { NameId } from '../../names.js';
 import { walk } from '../behaviour/index.js';
-import type { Expression } from '../syntax.js';
+import type { Expression, Statement } from '../syntax.js';
 import type { BlockScope } from './blockScope.js';
 import type { ModuleBody } from './body.js';
 import type { SignalValues } from './template.js';
@@ -45,7 +45,7 @@ export function valueNamesOf({
   };
   const look = (scope: BlockScope, tree: unknown): void =>
     walk(tree, (node) => {
-      for (const pair of pairsOf(node)) note(scope, pair);
+      for (const pair of pairsOf(node as Statement | Expression)) note(scope, pair);
       return true;
     });
   for (const { scope, item } of processes) look(scope, item.body);
@@ -62,24 +62,17 @@ export function valueNamesOf({
 }
 
 // Signals, and values that they may be given or compared with, in one node of the syntax tree.
-function pairsOf(node: { readonly kind: unknown }): Pair[] {
+function pairsOf(node: Statement | Expression): Pair[] {
   if (node.kind === 'assign') {
-    const { target, value } = node as unknown as { target: Expression; value: Expression };
+    const { target, value } = node;
     return chosenBy(value).map((each): Pair => [target, each]);
   }
   if (node.kind === 'case') {
-    const { subject, items } = node as unknown as {
-      subject: Expression;
-      items: readonly { labels: readonly Expression[] }[];
-    };
+    const { subject, items } = node;
     return items.flatMap(({ labels }) => labels.map((label): Pair => [subject, label]));
   }
   if (node.kind === 'binary') {
-    const { operator, left, right } = node as unknown as {
-      operator: string;
-      left: Expression;
-      right: Expression;
-    };
+    const { operator, left, right } = node;
     if (equalities.has(operator))
       return [
         [left, right],
