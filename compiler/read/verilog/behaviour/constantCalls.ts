@@ -1,12 +1,14 @@
 import type { NameId } from '../../names.js';
 import type { Scope } from '../scope.js';
-import type { Item, RoutineItem } from '../syntax.js';
+import type { Item, NameExpression, RoutineItem, Statement } from '../syntax.js';
 import { knownOf } from './bits.js';
 import type { CallExpression, Context } from './context.js';
 import { resolveCalled } from './localScope.js';
 import { forEachName, isSystemName, plainMeaningOf } from './names.js';
 import { errorsMet } from './report.js';
 import { walk } from './walk.js';
+
+type Block = Extract<Statement, { kind: 'block' }>;
 
 const known = new WeakMap<CallExpression, WeakMap<Scope, bigint | null>>();
 
@@ -22,7 +24,7 @@ export function constantCall(call: CallExpression, context: Context): bigint | u
   if (value === undefined) {
     value = null;
     const before = errorsMet(scope.shared);
-    if (hasConstantArguments(call, context) && isPure(call, context)) {
+    if (hasConstantArguments(call, context) && areCallsPure(call, context)) {
       const bits = services.call(call, context).map(({ data }) => data);
       const result = knownOf(bits, logic);
       const isSure = errorsMet(scope.shared) === before && !context.store.aborted;
@@ -70,31 +72,37 @@ export function isPureFunction(
 ): boolean {
   if (open.has(routine)) return true;
   open.add(routine);
-  const own = new Set<NameId>([routine.name]);
-  const declare = (items: readonly Item[]): void => {
-    for (const item of items) {
-      if (item.kind === 'declaration') for (const { name } of item.names) own.add(name);
-      if (item.kind === 'parameter') for (const { name } of item.values) own.add(name);
-    }
-  };
-  declare(routine.declarations);
   let answer = true;
-  walk(routine.body, (node) => {
-    if (node.kind === 'block')
-      declare((node as { declarations?: readonly Item[] }).declarations ?? []);
-    if (node.kind === 'callTask') answer = false;
-    if (node.kind === 'call') {
-      const { path } = node as CallExpression;
-      const called = isSystemName(path, { scope }) ? undefined : resolveCalled(scope, path);
-      if (called?.kind === 'routine') {
-        answer &&= isPureFunction(called.syntax, called.scope, open);
+  // What a block declares hides other names in that block alone.
+  const look = (tree: unknown, own: ReadonlySet<NameId>): void =>
+    walk(tree, (node) => {
+      if (node.kind === 'callTask') answer = false;
+      else if (node.kind === 'block' && node !== tree) {
+        const { declarations } = node as Block;
+        if (declarations.length === 0) return answer;
+        look(node, new Set([...own, ...declaredNames(declarations)]));
+        return false;
+      } else if (node.kind === 'name') {
+        const { path } = node as NameExpression;
+        const isOwn = path.length === 1 && own.has(path[0]!);
+        answer &&= isOwn || scope.resolve(path)?.kind === 'parameter';
+        return false;
+      } else if (node.kind === 'call') {
+        const { path } = node as CallExpression;
+        const called = isSystemName(path, { scope }) ? undefined : resolveCalled(scope, path);
+        if (called?.kind === 'routine') {
+          answer &&= isPureFunction(called.syntax, called.scope, open);
+        }
       }
-    }
-    return answer;
-  });
-  forEachName(routine.body, ({ path }) => {
-    if (path.length === 1 && own.has(path[0]!)) return;
-    answer &&= scope.resolve(path)?.kind === 'parameter';
-  });
+      return answer;
+    });
+  look([routine.body], new Set([routine.name, ...declaredNames(routine.declarations)]));
   return answer;
+}
+
+function declaredNames(items: readonly Item[]): NameId[] {
+  return items.flatMap((item) => {
+    if (item.kind === 'declaration') return Array.from(item.names, ({ name }) => name);
+    return item.kind === 'parameter' ? item.values.map(({ name }) => name) : [];
+  });
 }

@@ -88,6 +88,31 @@ describe('a for loop', () => {
     }
   });
 
+  it('works out anew in each turn what functions read beyond their arguments', () => {
+    const loops = [
+      "for (s = 1; s < 5; s = s + 1) y[f(g(4'd1))] = 1;",
+      "s = 1; while (f(g(4'd1)) < 5) begin y[s] = 1; s = s + 1; end",
+      // A block's own variable hides the signal in that block alone.
+      "for (s = 1; s < 5; s = s + 1) y[h(4'd0)] = 1;",
+      "for (s = 1; s < 5; s = s + 1) y[f(h(4'd0))] = 1;",
+      "for (s = 1; s < 5; s = s + 1) y[k(4'd0)] = 1;",
+    ];
+    for (const loop of loops) {
+      const { diagnostics, simulate } = bench(`
+        reg [15:0] y; reg [3:0] s;
+        function [3:0] f(input [3:0] v); f = v; endfunction
+        function [3:0] g(input [3:0] v); g = v + s - 1; endfunction
+        function [3:0] h(input [3:0] v);
+          begin begin : inner reg [3:0] s; s = v; h = s; end h = h + s; end
+        endfunction
+        function [3:0] k(input [3:0] v);
+          begin : one reg [3:0] t; t = v; begin : two reg [3:0] s; s = t; t = s; end k = t + s; end
+        endfunction
+        always @* begin y = 0; ${loop} end`);
+      expect([loop, diagnostics, simulate().number('y')]).toEqual([loop, [], 0x1e]);
+    }
+  });
+
   it('ends in a constant function as anywhere else', () => {
     const items = `
       function integer log2(input integer n);
