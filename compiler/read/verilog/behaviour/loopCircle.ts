@@ -11,6 +11,8 @@ import { contains } from './walk.js';
 /** Turns after the first that are not looked at, as nearly all loops end among them. */
 const BLIND_TURNS = 500;
 
+const nearer = 'let each turn bring it nearer to its end';
+
 /**
  * Sees whether a loop can never end: because nothing changes what its end depends on, because its
  * index is too narrow for its end, or because all that steers it comes back to what it was.
@@ -76,7 +78,9 @@ export class LoopCircle {
       this.#report(`${this.#text(steering[0]!.name)} comes back to ${values}`);
     } else {
       const names = listed(steering.map(({ name }) => this.#text(name)));
-      this.#report(`${names} come back to values that they had`);
+      this.#abort(
+        `${names} come back to values that they had, so that this loop never ends; ${nearer}`,
+      );
     }
   }
 
@@ -89,7 +93,7 @@ export class LoopCircle {
   }
 
   #report(what: string): void {
-    this.#abort(`${what} before this loop ends; declare it wider, or as an integer`);
+    this.#abort(`${what} before this loop ends; declare it wider, or as an integer, or ${nearer}`);
   }
 
   #reportUnchanged(): void {
@@ -103,10 +107,7 @@ export class LoopCircle {
     const changed =
       target?.kind === 'name' ? `; its step changes ${this.#text(target.path.at(-1)!)}` : '';
     const what = names.size === 0 ? 'its condition' : listed([...names]);
-    this.#abort(
-      `this loop never ends, because nothing in it changes ${what}${changed}; ` +
-        'let each turn bring it nearer to its end',
-    );
+    this.#abort(`this loop never ends, because nothing in it changes ${what}${changed}; ${nearer}`);
   }
 
   #abort(message: string): void {

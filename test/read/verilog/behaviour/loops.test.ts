@@ -19,6 +19,9 @@ describe('a for loop', () => {
       always @* begin n = 0; ${loop} end`);
     expect(problems.map(({ code }) => code)).toEqual(['loop-unbounded']);
     expect(problems[0]!.message).toContain(`comes back to ${value} before`);
+    expect(problems[0]!.message).toMatch(
+      /wider, or as an integer, or let each turn bring it nearer/,
+    );
   });
 
   it.each([
@@ -44,7 +47,7 @@ describe('a for loop', () => {
       'two variables that go round',
       'i = 0; j = 1; k = 0; while (i + k < 8) begin if (j == 3) i = k; else k = j; j = (j + 1) % 4; end',
       'i + k < 8',
-      'come back to values that they had',
+      'come back to values that they had, so that this loop never ends; let each turn bring it nearer',
     ],
     [
       'an end that a function of parameters gives',
