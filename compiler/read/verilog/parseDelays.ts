@@ -1,6 +1,6 @@
 import { Keyword } from './keywords.js';
 import { parseExpression, parseMinTypMax, parseReference } from './parseExpression.js';
-import { parseNumber } from './parseNumber.js';
+import { parseNumber, parseNumberFrom, plainNumber } from './parseNumber.js';
 import type { Parser } from './parser.js';
 import type { Expression, Strength } from './syntax.js';
 import { Token } from './tokens.js';
@@ -27,8 +27,21 @@ const takesTime = (delay: Expression): boolean =>
 export function parseDelayValue(p: Parser): Expression {
   const { kind } = p.tokens;
   if (kind === Token.Identifier) return parseReference(p);
-  if (kind === Token.Number || kind === Token.Real || kind === Token.Based) return parseNumber(p);
+  if (kind === Token.Number) return parsePlainDelay(p);
+  if (kind === Token.Real || kind === Token.Based) return parseNumber(p);
   return p.fail("a number, a name or '(' after '#'");
+}
+
+/**
+ * A delay has no base (clause 7.14): in `#1 'h0` the value stands apart. Where both touch, as in
+ * `#4'd5`, one number is meant.
+ */
+function parsePlainDelay(p: Parser): Expression {
+  const { start, end, value } = p.tokens;
+  if (value < 0) return parseNumber(p);
+  p.tokens.next();
+  if (p.tokens.start === end) return parseNumberFrom(p, value, start, end);
+  return plainNumber(value, start, end);
 }
 
 type Level = Strength['zero'];

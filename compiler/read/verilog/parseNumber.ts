@@ -36,12 +36,15 @@ export function parseNumberFrom(
   start: Position,
   end: Position,
 ): NumberExpression {
-  if (!p.is(Token.Based)) {
-    const bits = { value: BigInt(value), unknown: 0n, highZ: 0n, extends: 'zero' } as const;
-    return numberOf(undefined, true, bits, start, end);
-  }
+  if (!p.is(Token.Based)) return plainNumber(value, start, end);
   checkWidth(p, value, start, end);
   return parseBased(p, value, start);
+}
+
+/** A number as it stands, without size and base. */
+export function plainNumber(value: number, start: Position, end: Position): NumberExpression {
+  const bits = { value: BigInt(value), unknown: 0n, highZ: 0n, extends: 'zero' } as const;
+  return numberOf(undefined, true, bits, start, end);
 }
 
 function parseBased(p: Parser, width: number | undefined, start: Position): NumberExpression {
