@@ -202,4 +202,47 @@ describe('a text may hold', () => {
     const assigns = reading(text.replace('else ;', 'else y <= 0;'));
     expect(assigns.problems.some((problem) => problem.startsWith('not-supported'))).toBe(true);
   });
+
+  it('what a function assigns that decides whether something is shown', () => {
+    const shows = [
+      'if (f(a)) $display("a");',
+      'if (f(a)) ;',
+      'if (a[0]) $display("a"); else if (f(a)) $stop; else if (f(2)) ;',
+      'begin : shown if (f(a)) begin $display("a"); end end',
+      'case (a) 0: $display("a"); f(a): ; endcase',
+      'case (f(a)) 0: ; default: $display("a"); endcase',
+    ];
+    for (const statement of shows) {
+      const text = `module t (input [1:0] a, output reg [1:0] y); reg [1:0] t;
+        function f(input [1:0] v); begin t = v + 1; f = v[1]; end endfunction
+        always @* begin t = 0; ${statement} y = t; end endmodule`;
+      const y = signalValue(reading(text).circuit!, 'y', { a: 2 });
+      expect([statement, y]).toEqual([statement, 3]);
+    }
+  });
+
+  const shown = 'task-ignored $display("a");@3';
+  it.each([
+    ['if (^amp) $display("a");', ['name-undeclared amp@3', shown]],
+    [
+      'if (a[0]) ; else if (nosuch) $display("a"); else begin : b if (other) ; end',
+      ['name-undeclared nosuch@3', shown, 'name-undeclared other@3'],
+    ],
+    [
+      'case (nosuch) 1: ; a[other]: $display("a"); endcase',
+      ['name-undeclared nosuch@3', 'name-undeclared other@3', shown],
+    ],
+    ['if (nosuch(a)) $display("a");', ['name-undeclared nosuch(a)@3', shown]],
+    // A variable of the block, a real number, and what a test bench around may have.
+    [
+      'if (a[0]) begin : b reg k; real r; if (k && r > 0.5 && bench.loud) $display("a"); end',
+      [shown],
+    ],
+  ])('names that decide what is shown: %s', (statement, expected) => {
+    const { problems } = reading(`module t (input [1:0] a, output reg y);
+      always @* begin y = a[0];
+ ${statement}
+      end endmodule`);
+    expect(problems).toEqual(expected);
+  });
 });

@@ -1,47 +1,72 @@
 import type { Statement } from '../syntax.js';
+import { areCallsPure } from './constantCalls.js';
 import type { Context } from './context.js';
-import { refuse } from './names.js';
+import { bindingOf, forEachName, refuse } from './names.js';
 import { readMemoryFile } from './readMemoryFile.js';
 import { report } from './report.js';
-import { walk } from './walk.js';
 
 type TaskCall = Extract<Statement, { kind: 'callTask' }>;
 
-// Clause 17, and the tasks of later standards that report: what prints, writes waveforms or steers a simulation.
+// Clause 17, and the tasks of later standards that report: what prints, writes waveforms or steers
+// a simulation.
 const ignored =
   /^\$(f?(display|write|strobe|monitor)[bho]?|monitor(on|off)|finish|stop|fclose|fflush|dump\w+|timeformat|printtimescale|fatal|error|warning|info)$/;
 
 /**
  * Whether a statement does nothing but call tasks that show something: what decides whether they
- * are called, often a comparison with x, has no part in the circuit either.
+ * are called, often a comparison with x, has no part in the circuit either, unless it calls a
+ * function that may assign something.
  */
 export function onlyShows(statement: Statement, context: Context): boolean {
-  switch (statement.kind) {
+  let rest: Statement | undefined = statement;
+  for (; rest?.kind === 'if'; rest = rest.whenFalse) {
+    if (!onlyShows(rest.whenTrue, context) || !areCallsPure(rest.condition, context)) return false;
+  }
+  switch (rest?.kind) {
+    case undefined:
     case 'null':
       return true;
     case 'callTask': {
-      const name = context.scope.shared.names.text(statement.path[0]!);
-      return statement.path.length === 1 && ignored.test(name);
+      const name = context.scope.shared.names.text(rest.path[0]!);
+      return rest.path.length === 1 && ignored.test(name);
     }
     case 'block':
-      return statement.body.every((part) => onlyShows(part, context));
-    case 'if':
-      return (
-        onlyShows(statement.whenTrue, context) &&
-        (statement.whenFalse === undefined || onlyShows(statement.whenFalse, context))
-      );
+      return rest.body.every((part) => onlyShows(part, context));
     case 'case':
-      return statement.items.every(({ body }) => onlyShows(body, context));
+      return (
+        rest.items.every(({ body }) => onlyShows(body, context)) &&
+        areCallsPure([rest.subject, rest.items.map(({ labels }) => labels)], context)
+      );
     default:
       return false;
   }
 }
 
-/** Says of each task in a statement that only shows something that it is left out. */
+/**
+ * Says of each task in a statement that only shows something that it is left out, and of names in
+ * its conditions if they mean nothing.
+ */
 export function leaveOut(statement: Statement, context: Context): void {
-  walk(statement, (node) => {
-    if (node.kind === 'callTask') executeSystemTask(node as TaskCall, context);
-    return true;
+  const { services } = context;
+  let rest: Statement | undefined = statement;
+  for (; rest?.kind === 'if'; rest = rest.whenFalse) {
+    checkNames(rest.condition, context);
+    services.execute(rest.whenTrue, context);
+  }
+  if (rest?.kind === 'case') {
+    checkNames(rest.subject, context);
+    for (const { labels, body } of rest.items) {
+      checkNames(labels, context);
+      services.execute(body, context);
+    }
+  } else if (rest !== undefined) services.execute(rest, context);
+}
+
+// Real numbers may decide what is shown, and signals of a test bench around the design.
+function checkNames(condition: unknown, context: Context): void {
+  forEachName(condition, (name) => {
+    const isReal = context.scope.unusable?.(name.path[0]!) === 'real';
+    if (name.path.length === 1 && !isReal) bindingOf(name, context);
   });
 }
 
