@@ -1,15 +1,13 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { designOf } from '../../compiler/compile.js';
 import {
   circuitWithNotes,
-  neighbours,
   primitiveNetlist,
   TableModel,
   wordsOver,
 } from '../support/primitiveTable.js';
-import { play } from '../support/rows.js';
-import { onEachEngine, responseTo } from './courses.js';
+import { responseTo } from './courses.js';
+import { expectTable, inputCount, randomTable, tellsViolations } from './primitiveTables.js';
 
 /** Flip-flops and latches, in which two-valued runs need no table. */
 const recognized = {
@@ -59,73 +57,6 @@ const others = {
     b * ? ? ?:?:-; b ? * ? ?:?:-;`,
 } as const;
 
-const levelSymbol = fc.constantFrom('0', '1', 'x', '?', 'b', '?');
-const edgeSymbol = fc.constantFrom('r', 'f', 'p', 'n', '*', '(x1)', '(?0)', '(??)', '(1x)', '(bx)');
-const inputCount = fc.integer({ min: 1, max: 3 });
-
-/** Random rows for some inputs, with an edge in some of them where there is a state. */
-function randomTable(inputs: number, isSequential: boolean): fc.Arbitrary<string> {
-  const row = fc.record({
-    levels: fc.array(levelSymbol, { minLength: inputs, maxLength: inputs }),
-    edge: fc.option(fc.record({ place: fc.nat(inputs - 1), symbol: edgeSymbol })),
-    state: fc.constantFrom('?', '?', '0', '1', 'x', 'b'),
-    output: fc.constantFrom('0', '1', 'x', ...(isSequential ? ['-'] : [])),
-  });
-  const text = row.map(({ levels, edge, state, output }) => {
-    if (!isSequential) return `${levels.join(' ')} : ${output};`;
-    const symbols = levels.map((level, i) => (i === edge?.place ? edge.symbol : level));
-    return `${symbols.join(' ')} : ${state} : ${output};`;
-  });
-  return fc.array(text, { minLength: 1, maxLength: 9, size: 'max' }).map((rows) => rows.join(' '));
-}
-
-/** All changes of one input from all levels, or every n-th of them where they are many. */
-function changesOver(alphabet: string, inputs: number): [before: string, after: string][] {
-  const all = wordsOver(alphabet, inputs).flatMap((before) =>
-    neighbours(before, alphabet).map((after): [string, string] => [before, after]),
-  );
-  const step = Math.ceil(all.length / 400) | 1;
-  return all.filter((_, i) => i % step === 0);
-}
-
-/** Expects of every engine, from every state, what the table says of every single change. */
-async function expectTable(table: string, threeValued: boolean): Promise<void> {
-  const model = new TableModel(table, true);
-  // No clocks of their own: every input is a column.
-  const circuit = circuitWithNotes(primitiveNetlist(table, model.inputs, true));
-  const design = designOf(circuit, { threeValued, clocks: [] });
-  const alphabet = threeValued ? '01x' : '01';
-  const settled = (value: string): string => (threeValued ? value : value.replace('x', '0'));
-  const changes = changesOver(alphabet, model.inputs);
-  await onEachEngine(design, threeValued ? 'unknown' : 'zero', (engine, name) => {
-    for (const [before, after] of changes) {
-      for (const state of alphabet) {
-        engine.reset(Uint8Array.of(state === 'x' ? 2 : Number(state)));
-        const [first, second] = play(engine, [before, after]) as [string, string];
-        const expected = settled(model.next(before, after, first));
-        expect(`${before} ${first} ${after} ${second}`, name).toBe(
-          `${before} ${first} ${after} ${expected}`,
-        );
-        if (first !== state) expectGiven(model, before, state, first, settled);
-      }
-    }
-  });
-}
-
-/** What levels make of a state at power-up, they make of it whichever input brings them about. */
-function expectGiven(
-  model: TableModel,
-  levels: string,
-  state: string,
-  given: string,
-  settled: (value: string) => string,
-): void {
-  const known = settled('x') === 'x' ? '01x' : '01';
-  for (const before of neighbours(levels, known)) {
-    expect(settled(model.next(before, levels, state))).toBe(given);
-  }
-}
-
 describe('a primitive with state does what its table says of each change of an input', () => {
   it.each(Object.entries(recognized))('with x, as %s', (_, table) => expectTable(table, true));
   it.each(Object.entries(others))('with x, as %s', (_, table) => expectTable(table, true));
@@ -137,18 +68,6 @@ describe('a primitive with state does what its table says of each change of an i
 });
 
 describe('a random table', () => {
-  // A change that only ever gives x is taken for none in two-valued runs, see the README.
-  const tellsViolations = (table: string): boolean => {
-    const model = new TableModel(table, true);
-    const words = wordsOver('01', model.inputs);
-    return Array.from({ length: model.inputs }, (_, input) =>
-      words.every((before) => {
-        const after = neighbours(before, '01').find((word) => word[input] !== before[input])!;
-        return [...'01'].every((state) => model.next(before, after, state) === 'x');
-      }),
-    ).includes(true);
-  };
-
   it('with state is followed, with x', () =>
     fc.assert(
       fc.asyncProperty(

@@ -81,15 +81,27 @@ const edgesOf = (symbol: string): readonly string[] =>
   letters[symbol] ??
   [...levelsOf(symbol[1]!)].flatMap((from) => [...levelsOf(symbol[2]!)].map((to) => from + to));
 
-/** A netlist with one instance of a primitive; inputs `a`, `b`, … and output `q`. */
-export function primitiveNetlist(table: string, inputs: number, isSequential: boolean): string {
-  const names = [...'abcdefghijkl'].slice(0, inputs).join(', ');
+/**
+ * A netlist with one instance of a primitive; inputs `a`, `b`, … and output `q`. Inputs that
+ * `ties` has a level for in place of a `-` are constants and no ports.
+ */
+export function primitiveNetlist(
+  table: string,
+  inputs: number,
+  isSequential: boolean,
+  ties = '',
+): string {
+  const all = [...'abcdefghijkl'].slice(0, inputs);
+  const names = all.join(', ');
+  const isFree = (i: number): boolean => (ties[i] ?? '-') === '-';
+  const free = all.filter((_, i) => isFree(i)).join(', ');
+  const terminals = all.map((name, i) => (isFree(i) ? name : `1'b${ties[i]}`)).join(', ');
   const rows = table.replaceAll(';', ';\n');
   return `primitive p (q, ${names}); output q; ${isSequential ? 'reg q;' : ''} input ${names};
       table ${rows}
       endtable
     endprimitive
-    module t (input ${names}, output q); p (q, ${names}); endmodule`;
+    module t (input ${free}, output q); p (q, ${terminals}); endmodule`;
 }
 
 /** All words of a length over an alphabet. */

@@ -2,6 +2,7 @@ import { type NetId, netId } from '../../../circuit/ids.js';
 import { blockNamesOf } from './blockNames.js';
 import type { ModuleBody } from './body.js';
 import { checkConflicts } from './conflicts.js';
+import { constantNetsOf } from './constantNets.js';
 import { handOnFloating } from './copies.js';
 import {
   countTypes,
@@ -42,6 +43,7 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
   // What drives an own variable has taken its value along.
   const farInitials = [...body.initialValues].filter(([net]) => !builder.isDriven(net));
   const valueNames = valueNamesOf(body);
+  const constants = constantNetsOf(builder, usage, nets, find, defaults);
   const template: Template = {
     name: body.text(module.name),
     isCell: module.isCell,
@@ -58,6 +60,7 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
     blocks: blockNamesOf(body, find),
     scope: body.root,
     netTypes: netTypesOf(classes, find),
+    ...(constants.size > 0 && { constants }),
     ...(valueNames.length > 0 && { valueNames }),
     ...(defaults.size > 0 && { defaults }),
     ...(farInitials.length > 0 && { farInitials }),

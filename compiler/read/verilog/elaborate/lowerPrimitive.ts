@@ -1,5 +1,5 @@
 import { GateKind } from '../../../circuit/gates.js';
-import { type NetId, netId } from '../../../circuit/ids.js';
+import type { NetId } from '../../../circuit/ids.js';
 import { combinationalDiagram, combinationalTable } from '../../../circuit/tables/cellTable.js';
 import { eventsOfRows } from '../../../circuit/tables/tableEvents.js';
 import type { PrimitiveSyntax } from '../syntax.js';
@@ -14,8 +14,14 @@ import { buildTruthTable, truthTable } from './truthTable.js';
 /** Tables are looked through for every combination of their inputs: 2^12 of them at most. */
 const MAX_INPUTS = 12;
 
+/** A message about a primitive as it is used. */
+export interface PrimitiveRemark {
+  readonly code: 'not-supported' | 'table-run';
+  readonly message: string;
+}
+
 /**
- * Builds the logic of a primitive: its output is net `first`, its inputs are the nets after it.
+ * Builds the logic of a primitive with an output and inputs; returns what there is to say about it.
  *
  * Where what is built does not say all that the table says of x, or is not even like it, the
  * recording gets the table too. A combination without a row gives x (IEEE 1364-2005, clause 8),
@@ -25,28 +31,28 @@ export function lowerPrimitive(
   design: Design,
   primitive: PrimitiveSyntax,
   recording: Recording,
-  first: NetId,
-): void {
+  output: NetId,
+  inputs: readonly NetId[],
+): PrimitiveRemark | undefined {
   const { ports, rows, sequential, initial } = primitive;
   const name = design.text(primitive.name);
-  const inputs = ports.slice(1).map((_, place) => netId(first + 1 + place));
-  const report = (code: 'not-supported' | 'table-run', message: string): void =>
-    design.diagnostics.add(code, message, design.wordSpan(primitive.nameStart));
   if (inputs.length > MAX_INPUTS) {
+    recording.drive(output, GateKind.Unknown, []);
     const reason = `it has ${inputs.length} inputs, more than ${MAX_INPUTS}; split it`;
-    report('not-supported', `primitive ${name} is not supported: ${reason}`);
-    return;
+    return { code: 'not-supported', message: `primitive ${name} is not supported: ${reason}` };
   }
   if (!sequential) {
-    lowerCombinational(name, primitive, inputs, recording, first);
-    return;
+    lowerCombinational(name, primitive, inputs, recording, output);
+    return undefined;
   }
   const names = ports.slice(1).map((port) => design.text(port));
-  const pins = { output: first, inputs, names, initial: initial ?? 2 };
+  const pins = { output, inputs, names, initial: initial ?? 2 };
   const source = eventsOfRows(exactRows(rows), inputs.length);
   const table = new PrimitiveTable(rows, inputs.length);
   const reason = lowerSequential({ name, table, source, isExact: true }, pins, recording);
-  if (reason !== undefined) report('table-run', `primitive ${name} ${reason}`);
+  return reason === undefined
+    ? undefined
+    : { code: 'table-run', message: `primitive ${name} ${reason}` };
 }
 
 function lowerCombinational(

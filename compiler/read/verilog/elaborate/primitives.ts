@@ -1,3 +1,4 @@
+import { netId } from '../../../circuit/ids.js';
 import type { PrimitiveSyntax } from '../syntax.js';
 import { Children } from './children.js';
 import type { Design } from './design.js';
@@ -7,16 +8,49 @@ import { pruneUnused } from './pruning.js';
 import { Recording } from './recording.js';
 import { Flag } from './symbols.js';
 import type { Template, TemplatePort } from './template.js';
+import { type Ties, withoutTied } from './tiedPrimitive.js';
 import { usageOf, usesOf } from './usage.js';
+
+/** So many inputs can be told apart in the number that stands for what they are tied to. */
+const MAX_TIED = 30;
 
 /** Compiles a user-defined primitive; its instances make no scope (IEEE 1364-2005, clause 8). */
 export function compilePrimitive(design: Design, primitive: PrimitiveSyntax): Template {
+  const inputs = primitive.ports.length - 1;
+  const untied = compileTied(design, primitive, []);
+  if (inputs > MAX_TIED) return untied;
+  const known = new Map<number, number>();
+  return {
+    ...untied,
+    tied: (key) => {
+      let template = known.get(key);
+      if (template === undefined) {
+        const ties = tiesOf(key, inputs);
+        template = design.add(compileTied(design, primitive, ties), primitive);
+        known.set(key, template);
+      }
+      return template;
+    },
+  };
+}
+
+/** The digits of a number of base 3: 0 for what may change, then 0 and 1. */
+function tiesOf(key: number, inputs: number): Ties {
+  return Array.from({ length: inputs }, (_, input) => {
+    const digit = Math.floor(key / 3 ** input) % 3;
+    return digit === 0 ? undefined : digit === 1 ? 0 : 1;
+  });
+}
+
+function compileTied(design: Design, primitive: PrimitiveSyntax, ties: Ties): Template {
   const recording = new Recording();
   const children = new Children();
   const { index, offset } = design.sources.locate(primitive.nameStart);
   recording.at(index, offset);
   const first = recording.declare(primitive.ports.length);
-  lowerPrimitive(design, primitive, recording, first);
+  const reduced = withoutTied(primitive, ties);
+  const inputs = reduced.kept.map((input) => netId(first + 1 + input));
+  let remark = lowerPrimitive(design, reduced.primitive, recording, first, inputs);
   const usage = usageOf(recording, children, []);
   const boundary = Uint32Array.from(primitive.ports, (_, place) => first + place);
   const canonical = fuseBuffers(recording, usage);
@@ -46,5 +80,13 @@ export function compilePrimitive(design: Design, primitive: PrimitiveSyntax): Te
     repeats: [],
     blocks: [],
     scope: undefined,
+    ...(remark !== undefined && {
+      whenUsed: () => {
+        if (remark === undefined) return;
+        const { code, message } = remark;
+        remark = undefined;
+        design.diagnostics.add(code, message, design.wordSpan(primitive.nameStart));
+      },
+    }),
   };
 }

@@ -2,6 +2,7 @@ import type { CircuitBuilder } from '../../../circuit/builder.js';
 import { GateKind } from '../../../circuit/gates.js';
 import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
 import type { NameId } from '../../names.js';
+import { ConstantNets } from './constantNets.js';
 import {
   BUS_PART,
   BusPin,
@@ -63,6 +64,7 @@ export class Stamper {
   /** Values at power-up that other modules give to state elements, by the circuit's net. */
   readonly #farInitials = new Map<number, 0 | 1>();
   readonly #memories: MemoryStamper;
+  readonly #levels: ConstantNets;
   /** The black boxes stamped so far. */
   readonly boxes: PlacedBox[] = [];
 
@@ -71,6 +73,7 @@ export class Stamper {
     this.#builder = builder;
     this.#templates = templates;
     this.#memories = new MemoryStamper(builder);
+    this.#levels = new ConstantNets(builder);
   }
 
   /** Stamps the top; returns the circuit's nets of its boundary. */
@@ -93,8 +96,9 @@ export class Stamper {
   /** Stamps a child's own logic; whether it has children to be stamped. */
   #stampChild(parent: Frame, child: number, depth: number): boolean {
     const { children } = parent.template;
-    const number = children.template(child);
+    const number = this.#templateOf(parent, child);
     const template = this.#templates[number]!;
+    template.whenUsed?.();
     const takesOver = parent.origin === undefined && template.isCell;
     const frame = this.#enter(depth, number, takesOver ? children.origin(child) : parent.origin);
     const { nets } = frame;
@@ -112,6 +116,20 @@ export class Stamper {
     if (template.recording.memories.length > 0) this.#addMemories(parent, child, frame, depth);
     if (template.isBox) this.#addBox(parent, child, frame);
     return template.children.count > 0;
+  }
+
+  /** The template of a child; of a primitive the one for what its inputs are tied to. */
+  #templateOf({ template: { children }, nets }: Frame, child: number): number {
+    const number = children.template(child);
+    const { tied, boundary } = this.#templates[number]!;
+    if (tied === undefined) return number;
+    let key = 0;
+    for (let place = boundary.length - 1; place > 0; place--) {
+      const net = children.port(child, place);
+      const level = net === NO_NET ? -1 : this.#levels.of(nets[net]!);
+      key = key * 3 + level + 1;
+    }
+    return key === 0 ? number : tied(key);
   }
 
   #addMemories(parent: Frame, child: number, frame: Frame, depth: number): void {
@@ -173,6 +191,7 @@ export class Stamper {
     // What drives each net, for tables: another driver of a bus may have come first.
     const driven = tables.length > 0 ? new Map<number, NetId>() : undefined;
     this.#makeDrivers(frame, driven);
+    for (const [net, level] of template.constants ?? []) this.#levels.add(nets[net]!, level);
     for (const { output, inputs, table } of tables) {
       const own = inputs.map((net) => netId(nets[net]!));
       this.#builder.table(driven!.get(nets[output]!)!, own, table);
@@ -230,7 +249,9 @@ export class Stamper {
     }
     if (kind === BUS_PART) {
       const [data, control] = this.#translated(recording, nets, start, BusPin.Traits);
-      this.#builder.busPart(output, data!, control!, recording.faninAt(start + BusPin.Traits));
+      const traits = recording.faninAt(start + BusPin.Traits);
+      this.#builder.busPart(output, data!, control!, traits);
+      this.#levels.addPart(output, data!, control!, traits);
       return NO_NET;
     }
     const count = kind <= GateKind.Unknown ? 0 : recording.faninEnd(driver) - start;

@@ -97,12 +97,22 @@ export interface Template {
   readonly scope: BlockScope | undefined;
   /** The nets whose type says more than `wire`; absent where there is none. */
   readonly netTypes?: readonly (readonly [net: number, type: NetType])[];
+  /** Nets that only a constant drives, see `constantNetsOf`; absent where there is none. */
+  readonly constants?: ReadonlyMap<number, 0 | 1>;
   /** Names of values of signals; absent where there is none. */
   readonly valueNames?: readonly SignalValues[];
   /** Drivers that give variables which nothing assigns their value at power-up. */
   readonly defaults?: ReadonlySet<number>;
   /** Values at power-up of variables of other modules; absent where there is none. */
   readonly farInitials?: readonly (readonly [net: number, value: 0 | 1])[];
+  /**
+   * For a primitive: the number of the template for instances that have inputs tied to constants.
+   * `key` has a digit of base 3 for each input, the first one the least: 0 for what may change, 1
+   * for a constant 0, 2 for a constant 1.
+   */
+  readonly tied?: (key: number) => number;
+  /** Says what there is to say where an instance is in the circuit; absent where that is nothing. */
+  readonly whenUsed?: () => void;
   /** The `Drive` of any net. */
   driveOf(net: NetId): number;
   /** Whether the module or its instances read a net. */
