@@ -1,5 +1,6 @@
 import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
 import type { Span } from '../../../diagnostics/source.js';
+import type { NameId } from '../../names.js';
 import { bitList } from './blockNames.js';
 import type { BlockScope } from './blockScope.js';
 import type { ModuleBody } from './body.js';
@@ -7,7 +8,7 @@ import { isWired, type NetClasses } from './defaults.js';
 import { wordSpan } from './messages.js';
 import { BUS_PART, DROPPED, type Origin } from './recording.js';
 import { NetClass } from './symbols.js';
-import { Drive } from './template.js';
+import { Drive, type Template } from './template.js';
 import type { Usage } from './usage.js';
 
 /** Reports nets with several drivers, unless `wand` or `wor` resolves them (clause 4.6.3). */
@@ -87,33 +88,59 @@ function reportConflicts(body: ModuleBody, conflicts: Map<number, Origin[]>): vo
   // What is left are nets of other modules.
   const said = new Set<string>();
   for (const [net, drivers] of conflicts) {
-    const far = farName(body, netId(net));
-    if (far !== undefined && said.has(far)) continue;
-    if (far !== undefined) said.add(far);
-    report(body, far ?? 'a net without a name', drivers);
+    const far = farSignal(body, netId(net));
+    if (far !== undefined && said.has(far.key)) continue;
+    if (far !== undefined) said.add(far.key);
+    report(body, far?.path ?? 'a net without a name', drivers);
   }
 }
 
-/** The path of a signal of an instance that a net stands for, without indices. */
-function farName({ children, design }: ModuleBody, net: NetId): string | undefined {
-  let at = children.reached(net);
+/** The signal or array of an instance that a net stands for; `key` tells it from all others. */
+function farSignal(
+  { blocks, children, design }: ModuleBody,
+  net: NetId,
+): { readonly key: string; readonly path: string } | undefined {
+  const path: NameId[] = [];
+  const key: number[] = [];
+  let around: readonly BlockScope[] = blocks;
   let within = children;
-  const path: string[] = [];
-  while (at !== undefined) {
-    const { child, childNet } = at;
-    const template = design.templates[within.template(child)]!;
-    path.push(design.text(within.name(child)));
-    for (const { nets, names } of template.blocks) {
-      const place = nets.indexOf(childNet);
-      if (place < 0) continue;
-      for (const { name, offset, width } of names.signals) {
-        if (place >= offset && place < offset + width) {
-          return [...path, name.replace(/\[.*$/, '')].join('.');
+  for (let at = within.reached(net); at !== undefined; at = within.reached(at.childNet)) {
+    const template = design.templates[within.template(at.child)]!;
+    path.push(...blockPath(around[within.block(at.child)]!), within.name(at.child));
+    key.push(at.child);
+    const found = symbolOf(template, at.childNet);
+    if (found !== undefined) {
+      const { block, symbol } = found;
+      path.push(...blockPath(block), block.symbols.name(symbol));
+      const texts = path.map((name) => design.text(name));
+      return { key: [...key, block.index, symbol].join(), path: texts.join('.') };
+    }
+    around = template.scope?.shared.blocks ?? [];
+    within = template.children;
+  }
+  return undefined;
+}
+
+/** The names of the blocks of a module that lead to one of them. */
+function blockPath({ parent, name }: BlockScope): NameId[] {
+  return parent === undefined ? [] : [...blockPath(parent), name];
+}
+
+/** The symbol that a net of a module belongs to. */
+function symbolOf(
+  { scope, canonical }: Template,
+  net: NetId,
+): { readonly block: BlockScope; readonly symbol: number } | undefined {
+  for (const block of scope?.shared.blocks ?? []) {
+    const { symbols } = block;
+    for (let symbol = 0; symbol < symbols.count; symbol++) {
+      const width = symbols.width(symbol);
+      for (const { first } of block.vectors(symbol)) {
+        for (let own: number = first; own < first + width; own++) {
+          if ((canonical?.[own] ?? own) === net) return { block, symbol };
         }
       }
     }
-    within = template.children;
-    at = within.reached(childNet);
   }
   return undefined;
 }

@@ -293,6 +293,26 @@ describe('nets', () => {
     ]);
   });
 
+  it('of instances are named with their blocks, each by itself', () => {
+    const text = `module leaf (input a, output y);
+      wire \\q[1] , \\q[2] ; assign \\q[1] = a, \\q[2] = a, y = a;
+      if (1) begin : inner wire [3:0] w; assign w = {4{a}}; end
+    endmodule
+    module mid (input a, output y);
+      if (1) begin : g leaf v (a, y); end
+    endmodule
+    module t (input a, output y);
+      if (1) begin : h mid u (a, y); end
+      assign h.u.g.v.\\q[1] = 0, h.u.g.v.\\q[2] = 0, h.u.g.v.inner.w[2:1] = 0;
+    endmodule`;
+    const messages = reading(text).diagnostics.list.map(({ message }) => message);
+    expect(messages.sort()).toEqual(
+      ['q[1]', 'q[2]', 'inner.w']
+        .map((name) => `h.u.g.v.${name} has 2 drivers; leave one of them`)
+        .sort(),
+    );
+  });
+
   it('without driver are reported where they are read', () => {
     const text = `module t (input a, output [1:0] y, output z);
       wire n, unread;
