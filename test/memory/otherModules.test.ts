@@ -4,13 +4,13 @@ import { powerUpState } from '../../compiler/circuit/powerUp.js';
 import { powerUpMemory } from '../../compiler/circuit/powerUpMemory.js';
 import { designOf } from '../../compiler/compile.js';
 import { createEngine } from '../../compiler/engines.js';
-import { signalValue } from '../read/verilog/elaborate/reading.js';
+import { netsOf, signalValue } from '../read/verilog/elaborate/reading.js';
 import { randomRows, responseOf } from '../support/responses.js';
 import { circuitOfText, reading } from './circuits.js';
 
 // Hierarchical names reach memories too: IEEE 1364-2005, 12.5 and 12.6, and 17.2.9 for data files.
-// Where a module around and the module itself both give a word its value, the order of `initial`
-// blocks is open (clause 9.9.1); here the one around comes last.
+// Where several modules give a word its value, the order of `initial` blocks is open (clause 9.9.1);
+// here that of the memory comes first, then the others from inside out and in the order of the text.
 
 async function responsesOf(text: string, threeValued: boolean): Promise<Uint32Array[]> {
   const circuit = circuitOfText(text);
@@ -115,6 +115,36 @@ describe('the contents of a memory of another module', () => {
     expect(givenWords(circuit, 'n.y.m')).toEqual({ 5: 0x2a, 6: 0x2b, 7: 1 });
     expect(givenWords(circuit, 'w.x.m')).toEqual({ 6: 9, 7: 10 });
     expect(givenWords(circuit, 'w.y.m')).toEqual({ 7: 1 });
+  });
+
+  it.each([
+    ['of those at one depth the last', 'far #(1) x (); own u (c, d, q); far #(2) y ();', 2],
+    ['the one further out before it', 'far #(1) x (); own u (c, d, q); deep #(2) y ();', 1],
+    ['the one further out behind it', 'deep #(2) x (); own u (c, d, q); far #(1) y ();', 1],
+    ['the module around', 'deep #(2) x (); far #(3) y (); own u (c, d, q); SAY', 1],
+    ['another than its own', 'own u (c, d, q); if (1) begin : g deep #(3) x (); end', 3],
+  ])('come from several modules in the order of those of registers: %s', (_, items, expected) => {
+    const firstValue = (declaration: string, name: string, index: string): number => {
+      const circuit = circuitOfText(
+        `module own (input c, input [9:0] d, output [1:0] q); reg ${declaration};
+          initial ${name} = 0; assign q = v${index}; always @(posedge c) v${index} <= d; endmodule
+        module far; parameter P = 0; initial t.u.${name} = P; endmodule
+        module deep; parameter P = 0; far #(P) f (); endmodule
+        module t (input c, input [9:0] d, output [1:0] q);
+          ${items.replace('SAY', `initial u.${name} = 1;`)} endmodule`,
+        { top: 't' },
+      );
+      if (circuit.memories.length > 0) return givenWords(circuit, 'u.v')[5]!;
+      const { output, initial } = circuit.registers;
+      const [low, high] = netsOf(circuit, `u.${name}`).map((net) => initial[output.indexOf(net)]!);
+      return low! + 2 * high!;
+    };
+    const values = [
+      firstValue('[1:0] v', 'v', ''),
+      firstValue('[1:0] v [0:7]', 'v[5]', '[d]'),
+      firstValue('[1:0] v [0:1023]', 'v[5]', '[d]'),
+    ];
+    expect(values).toEqual([expected, expected, expected]);
   });
 
   it('reach elements of arrays of instances and of generate loops', () => {

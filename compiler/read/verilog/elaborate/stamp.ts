@@ -61,8 +61,12 @@ export class Stamper {
   readonly #lists: NetId[][] = [];
   /** Index of the names of each template's first block in the circuit. */
   readonly #modules: (number | undefined)[] = [];
-  /** Values at power-up that other modules give to state elements, by the circuit's net. */
-  readonly #farInitials = new Map<number, 0 | 1>();
+  /**
+   * Values at power-up that other modules give to state elements, by the circuit's net, and how deep
+   * in the hierarchy they are given: the outermost one wins, at one depth the last, as in
+   * `PlacedMemory`.
+   */
+  readonly #farInitials = new Map<number, { readonly value: 0 | 1; readonly depth: number }>();
   readonly #memories: MemoryStamper;
   readonly #levels: ConstantNets;
   /** The black boxes stamped so far. */
@@ -79,7 +83,7 @@ export class Stamper {
   /** Stamps the top; returns the circuit's nets of its boundary. */
   stamp(top: Template): Uint32Array {
     const frame = this.#enter(0, this.#templates.indexOf(top), undefined);
-    this.#fill(frame);
+    this.#fill(frame, 0);
     this.#addScopes(frame, top.name, 0);
     this.#memories.add(frame, 0, []);
     const boundary = top.boundary.map((net) => frame.nets[net]!);
@@ -88,7 +92,9 @@ export class Stamper {
       if (current.nextChild === current.template.children.count) depth--;
       else if (this.#stampChild(current, current.nextChild++, depth + 1)) depth++;
     }
-    this.#builder.setInitials(this.#farInitials);
+    this.#builder.setInitials(
+      new Map(Array.from(this.#farInitials, ([net, { value }]) => [net, value])),
+    );
     this.#memories.finish();
     return boundary;
   }
@@ -110,7 +116,7 @@ export class Stamper {
     if (children.hasImports) {
       for (const { childNet, net } of children.imports(child)) nets[childNet] = parent.nets[net]!;
     }
-    this.#fill(frame);
+    this.#fill(frame, depth);
     const name = children.name(child);
     if (name !== 0) this.#addScopes(frame, name, parent.scopes[children.block(child)]!);
     if (template.recording.memories.length > 0) this.#addMemories(parent, child, frame, depth);
@@ -183,7 +189,7 @@ export class Stamper {
   }
 
   /** Makes the nets that are not connected yet, and all drivers. */
-  #fill(frame: Frame): void {
+  #fill(frame: Frame, depth: number): void {
     const { template, nets, origin } = frame;
     const { tables } = template.recording;
     if (origin !== undefined) this.#builder.at(origin.source, origin.offset);
@@ -197,9 +203,9 @@ export class Stamper {
       this.#builder.table(driven!.get(nets[output]!)!, own, table);
     }
     for (const [net, value] of template.farInitials ?? []) {
-      // What a module further out says wins; it has been stamped before.
       const own = nets[net]!;
-      if (!this.#farInitials.has(own)) this.#farInitials.set(own, value);
+      const known = this.#farInitials.get(own);
+      if (known === undefined || depth <= known.depth) this.#farInitials.set(own, { value, depth });
     }
     for (const { nets: own, names } of template.valueNames ?? []) {
       const moved = Uint32Array.from(own, (net) => nets[net]!);
@@ -242,7 +248,7 @@ export class Stamper {
     let kind = recording.driverKind(driver);
     if (kind === DROPPED || kind === GateKind.MemoryRead) return NO_NET;
     const output = netId(nets[recording.driverOutput(driver)]!);
-    if (defaults?.has(driver)) kind = this.#farInitials.get(output) ?? kind;
+    if (defaults?.has(driver)) kind = this.#farInitials.get(output)?.value ?? kind;
     const start = recording.faninStart(driver);
     if (kind === GateKind.Register || kind === GateKind.Latch) {
       return this.#driveState(recording, driver, output, nets);

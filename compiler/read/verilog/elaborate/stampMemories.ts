@@ -31,7 +31,10 @@ export class PlacedMemory {
     this.#far.push({ depth, contents });
   }
 
-  /** Lets the circuit have its contents where modules have told of them; the outermost one wins. */
+  /**
+   * Lets the circuit have its contents where other modules have told of them. They win over its own
+   * module; of several the outermost one wins, at one depth the last.
+   */
   fill(builder: CircuitBuilder): void {
     if (this.#far.length === 0) return;
     const contents = this.#own!.copy();
