@@ -211,14 +211,32 @@ describe('a text may hold', () => {
       'begin : shown if (f(a)) begin $display("a"); end end',
       'case (a) 0: $display("a"); f(a): ; endcase',
       'case (f(a)) 0: ; default: $display("a"); endcase',
+      '$display("%b", f(a));',
+      'if (a[1]) $display("%b", $signed({same(f(a)), same(a)}));',
+      'if (a[1]) begin : b reg g; $display("%b", f(a)); end',
+      'if (nested(a)) $display("a");',
     ];
     for (const statement of shows) {
       const text = `module t (input [1:0] a, output reg [1:0] y); reg [1:0] t;
         function f(input [1:0] v); begin t = v + 1; f = v[1]; end endfunction
+        function same(input v); same = v; endfunction
+        function nested(input [1:0] v); begin : b reg t; t = f(v); nested = t; end endfunction
         always @* begin t = 0; ${statement} y = t; end endmodule`;
       const y = signalValue(reading(text).circuit!, 'y', { a: 2 });
       expect([statement, y]).toEqual([statement, 3]);
     }
+  });
+
+  it('functions that only look at signals where something is shown', () => {
+    const text = `module t (input [1:0] a, output y); reg [1:0] t; assign y = a[0];
+      function unknown(input v); reg [1:0] own [0:1]; begin
+        own[a[0]] = t; unknown = own[0] === 2'bxx; $write("%b", t); end endfunction
+      always @* begin t = a; if (unknown(1)) $display("a"); $display("%b", unknown(0)); end
+    endmodule`;
+    expect(reading(text).problems).toEqual([
+      'task-ignored $display("a");@4',
+      'task-ignored $display("%b", unknown(0));@4',
+    ]);
   });
 
   const shown = 'task-ignored $display("a");@3';

@@ -1,14 +1,16 @@
 import type { NameId } from '../../names.js';
 import type { Scope } from '../scope.js';
-import type { Item, NameExpression, RoutineItem, Statement } from '../syntax.js';
+import type { AssignStatement, Item, NameExpression, RoutineItem, Statement } from '../syntax.js';
 import { knownOf } from './bits.js';
 import type { CallExpression, Context } from './context.js';
 import { resolveCalled } from './localScope.js';
 import { forEachName, isSystemName, plainMeaningOf } from './names.js';
 import { errorsMet } from './report.js';
-import { walk } from './walk.js';
+import { showsOnly } from './showsOnly.js';
+import { assignedNames, walk } from './walk.js';
 
 type Block = Extract<Statement, { kind: 'block' }>;
+type TaskCall = Extract<Statement, { kind: 'callTask' }>;
 
 const known = new WeakMap<CallExpression, WeakMap<Scope, bigint | null>>();
 
@@ -45,57 +47,78 @@ function hasConstantArguments(call: CallExpression, context: Context): boolean {
 
 /** Whether all calls in a part of the syntax tree are of functions whose arguments say it all. */
 export function areCallsPure(tree: unknown, context: Context): boolean {
-  let arePure = true;
+  return areCallsConfined(tree, context, 'names');
+}
+
+/** Whether a call in a part of the syntax tree may assign what is not the function's own. */
+export function mayAssign(tree: unknown, context: Context): boolean {
+  return !areCallsConfined(tree, context, 'targets');
+}
+
+/** Whether a function names nothing but parameters and its own variables. */
+export function isPureFunction(routine: RoutineItem, scope: Scope): boolean {
+  return isConfined(routine, scope, 'names', new Set());
+}
+
+/** What of a function is to be its own: all that it names, or what it assigns. */
+type Confined = 'names' | 'targets';
+
+function areCallsConfined(tree: unknown, context: Context, what: Confined): boolean {
+  let areConfined = true;
   walk(tree, (node) => {
-    if (node.kind === 'callTask') arePure = false;
-    if (node.kind === 'call') arePure &&= isPure(node as CallExpression, context);
-    return arePure;
+    if (node.kind === 'callTask') areConfined = false;
+    if (node.kind !== 'call') return areConfined;
+    const { path } = node as CallExpression;
+    if (isSystemName(path, context)) return true;
+    const called = resolveCalled(context.scope, path);
+    areConfined &&=
+      called?.kind === 'routine' &&
+      called.syntax.kind === 'function' &&
+      isConfined(called.syntax, called.scope, what, new Set());
+    return areConfined;
   });
-  return arePure;
+  return areConfined;
 }
 
-function isPure(call: CallExpression, context: Context): boolean {
-  if (isSystemName(call.path, context)) return true;
-  const binding = resolveCalled(context.scope, call.path);
-  if (binding?.kind !== 'routine' || binding.syntax.kind !== 'function') return false;
-  return isPureFunction(binding.syntax, binding.scope);
-}
-
-/**
- * Whether a function names nothing but parameters and its own variables. Functions that call each
- * other do so unless something else speaks against it.
- */
-export function isPureFunction(
+/** Functions that call each other, `open` ones among them, are confined unless one of them is not. */
+function isConfined(
   routine: RoutineItem,
   scope: Scope,
-  open = new Set<RoutineItem>(),
+  what: Confined,
+  open: Set<RoutineItem>,
 ): boolean {
   if (open.has(routine)) return true;
   open.add(routine);
   let answer = true;
-  // What a block declares hides other names in that block alone.
-  const look = (tree: unknown, own: ReadonlySet<NameId>): void =>
+  const look = (tree: unknown, own: ReadonlySet<NameId>): void => {
+    const check = ({ path }: NameExpression): void => {
+      const isOwn = path.length === 1 && own.has(path[0]!);
+      answer &&= isOwn || scope.resolve(path)?.kind === 'parameter';
+    };
     walk(tree, (node) => {
-      if (node.kind === 'callTask') answer = false;
-      else if (node.kind === 'block' && node !== tree) {
+      if (node.kind === 'callTask') {
+        answer &&= what === 'targets' && showsOnly((node as TaskCall).path, { scope });
+      } else if (node.kind === 'block' && node !== tree) {
+        // What a block declares hides other names in that block alone.
         const { declarations } = node as Block;
         if (declarations.length === 0) return answer;
         look(node, new Set([...own, ...declaredNames(declarations)]));
         return false;
       } else if (node.kind === 'name') {
-        const { path } = node as NameExpression;
-        const isOwn = path.length === 1 && own.has(path[0]!);
-        answer &&= isOwn || scope.resolve(path)?.kind === 'parameter';
+        if (what === 'names') check(node as NameExpression);
         return false;
+      } else if (node.kind === 'assign') {
+        if (what === 'targets') assignedNames((node as AssignStatement).target).forEach(check);
       } else if (node.kind === 'call') {
         const { path } = node as CallExpression;
         const called = isSystemName(path, { scope }) ? undefined : resolveCalled(scope, path);
         if (called?.kind === 'routine') {
-          answer &&= isPureFunction(called.syntax, called.scope, open);
+          answer &&= isConfined(called.syntax, called.scope, what, open);
         }
       }
       return answer;
     });
+  };
   look([routine.body], new Set([routine.name, ...declaredNames(routine.declarations)]));
   return answer;
 }

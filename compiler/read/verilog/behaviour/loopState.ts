@@ -1,10 +1,10 @@
 import type { Binding, SignalBinding } from '../scope.js';
-import type { AssignStatement, Expression, NameExpression, Statement } from '../syntax.js';
+import type { AssignStatement, Expression, Statement } from '../syntax.js';
 import { knownOf } from './bits.js';
 import { areCallsPure } from './constantCalls.js';
 import type { Context } from './context.js';
 import { forEachName, plainMeaningOf } from './names.js';
-import { contains, walk } from './walk.js';
+import { assignedNames, contains, walk } from './walk.js';
 
 /** The parts of a loop; a `while` has no step. */
 export interface Loop {
@@ -58,21 +58,6 @@ export function steeringVariables(loop: Loop, context: Context): SignalBinding[]
     });
   }
   return isClear ? [...steering.values()] : undefined;
-}
-
-/** The names of what an assignment's target assigns, without those in its selects. */
-function assignedNames(target: Expression): NameExpression[] {
-  switch (target.kind) {
-    case 'name':
-      return [target];
-    case 'select':
-    case 'part':
-      return assignedNames(target.base);
-    case 'concat':
-      return target.parts.flatMap(assignedNames);
-    default:
-      return [];
-  }
 }
 
 function conditionsIn(body: Statement): unknown[] {

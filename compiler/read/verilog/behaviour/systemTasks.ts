@@ -1,41 +1,36 @@
 import type { Statement } from '../syntax.js';
-import { areCallsPure } from './constantCalls.js';
-import type { Context } from './context.js';
-import { bindingOf, forEachName, refuse } from './names.js';
+import { mayAssign } from './constantCalls.js';
+import type { CallExpression, Context } from './context.js';
+import { bindingOf, forEachName, isSystemName, refuse } from './names.js';
 import { readMemoryFile } from './readMemoryFile.js';
 import { report } from './report.js';
+import { showsOnly } from './showsOnly.js';
+import { walk } from './walk.js';
 
 type TaskCall = Extract<Statement, { kind: 'callTask' }>;
-
-// Clause 17, and the tasks of later standards that report: what prints, writes waveforms or steers
-// a simulation.
-const ignored =
-  /^\$(f?(display|write|strobe|monitor)[bho]?|monitor(on|off)|finish|stop|fclose|fflush|dump\w+|timeformat|printtimescale|fatal|error|warning|info)$/;
 
 /**
  * Whether a statement does nothing but call tasks that show something: what decides whether they
  * are called, often a comparison with x, has no part in the circuit either, unless it calls a
- * function that may assign something.
+ * function that assigns something.
  */
 export function onlyShows(statement: Statement, context: Context): boolean {
   let rest: Statement | undefined = statement;
   for (; rest?.kind === 'if'; rest = rest.whenFalse) {
-    if (!onlyShows(rest.whenTrue, context) || !areCallsPure(rest.condition, context)) return false;
+    if (!onlyShows(rest.whenTrue, context) || mayAssign(rest.condition, context)) return false;
   }
   switch (rest?.kind) {
     case undefined:
     case 'null':
       return true;
-    case 'callTask': {
-      const name = context.scope.shared.names.text(rest.path[0]!);
-      return rest.path.length === 1 && ignored.test(name);
-    }
+    case 'callTask':
+      return showsOnly(rest.path, context);
     case 'block':
       return rest.body.every((part) => onlyShows(part, context));
     case 'case':
       return (
         rest.items.every(({ body }) => onlyShows(body, context)) &&
-        areCallsPure([rest.subject, rest.items.map(({ labels }) => labels)], context)
+        !mayAssign([rest.subject, rest.items.map(({ labels }) => labels)], context)
       );
     default:
       return false;
@@ -74,11 +69,21 @@ function checkNames(condition: unknown, context: Context): void {
 export function executeSystemTask(statement: TaskCall, context: Context): void {
   const { shared } = context.scope;
   const name = shared.names.text(statement.path[0]!);
-  if (ignored.test(name)) {
+  if (showsOnly(statement.path, context)) {
+    callAssigning(statement.arguments, context);
     report(shared, 'task-ignored', statement, `\`${name}\` has no part in a circuit; left out`);
   } else if (name === '$readmemh' || name === '$readmemb') {
     readMemoryFile(statement, name === '$readmemh' ? 16 : 2, context);
   } else {
     refuse(context, statement, `\`${name}\` has no meaning in a circuit; leave it out`);
   }
+}
+
+/** Calls the functions in a part of the syntax tree that assign something. */
+function callAssigning(tree: unknown, context: Context): void {
+  walk(tree, (node) => {
+    if (node.kind !== 'call' || isSystemName((node as CallExpression).path, context)) return true;
+    if (mayAssign(node, context)) context.services.call(node as CallExpression, context);
+    return false;
+  });
 }

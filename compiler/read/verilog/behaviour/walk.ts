@@ -1,4 +1,4 @@
-import type { Expression } from '../syntax.js';
+import type { Expression, NameExpression } from '../syntax.js';
 
 /** A part of the syntax tree that tells its kind. */
 interface Node {
@@ -34,4 +34,19 @@ export function contains(tree: unknown, kind: string): boolean {
 export function isBare(value: Expression): boolean {
   if (value.kind === 'concat') return value.parts.every(isBare);
   return value.kind === 'name' || value.kind === 'select' || value.kind === 'part';
+}
+
+/** The names of what an assignment's target assigns, without those in its selects. */
+export function assignedNames(target: Expression): NameExpression[] {
+  switch (target.kind) {
+    case 'name':
+      return [target];
+    case 'select':
+    case 'part':
+      return assignedNames(target.base);
+    case 'concat':
+      return target.parts.flatMap(assignedNames);
+    default:
+      return [];
+  }
 }
