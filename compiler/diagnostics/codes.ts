@@ -167,8 +167,8 @@ export const codeTable = {
     'Assign a default first, or complete the branches.',
   ),
   'sensitivity-incomplete': warning(
-    'A level-sensitive event list leaves out signals that are read; it is taken as complete.',
-    'Write @*.',
+    'A level-sensitive event list leaves out signals that are read, or an edge-sensitive one those of an asynchronous load; it is taken as complete.',
+    'Write @*; load at the clock edge where no asynchronous load is meant.',
   ),
   'select-outside': warning(
     'A constant select lies outside the declaration; it reads as x and writes nothing.',

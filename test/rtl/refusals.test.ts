@@ -72,13 +72,13 @@ const refusals: Readonly<Record<string, readonly [code: string, way: string, tex
          if (rst) q <= 1'b0; else q <= d;
      endmodule`,
   ],
-  'an asynchronous load': [
+  'an asynchronous load of what depends on the register': [
     'not-supported',
-    'load it at the clock edge',
+    'make it at the clock edge',
     `module m (input clk, load, input [3:0] d, output reg [3:0] q);
        always @(posedge clk or posedge load)
          if (load)
-           q <= d; // here
+           q <= q + d; // here
          else q <= q + 1;
      endmodule`,
   ],
@@ -327,6 +327,15 @@ const remarks: Readonly<Record<string, readonly [code: string, text: string]>> =
     `module m (input a, b, output reg q);
        always @(a) // here
          q = a & b;
+     endmodule`,
+  ],
+  'an asynchronous load': [
+    'sensitivity-incomplete',
+    `module m (input clk, load, input [3:0] d, output reg [3:0] q);
+       always @(posedge clk or posedge load)
+         if (load)
+           q <= d; // here
+         else q <= q + 1;
      endmodule`,
   ],
   'a bit that is not there': [

@@ -1,26 +1,24 @@
 import type { NetId } from '../../../circuit/ids.js';
-import type { Value } from '../../../circuit/values.js';
 import type { Position } from '../../../diagnostics/sourceMap.js';
 import type { EventSyntax, Statement } from '../syntax.js';
+import { type AsyncValue, type ControlNet, isLoad } from './asyncPins.js';
 import { netsNamed } from './combinational.js';
 import type { Context } from './context.js';
 import { lowerSelf } from './expressions.js';
 import { refuseHeld } from './heldMemory.js';
 import { refuse } from './names.js';
 import { freshRun, runClocked } from './process.js';
+import { report } from './report.js';
 
 /** An edge of the event list and the net it is of. */
-interface EdgeNet {
+interface EdgeNet extends ControlNet {
   readonly event: EventSyntax;
-  readonly net: NetId;
-  /** The value after the edge: 1 for posedge, 0 for negedge. */
-  readonly level: 0 | 1;
 }
 
-/** An asynchronous set or reset: what it makes of each bit that it does not leave alone. */
+/** An asynchronous set, reset or load: what it makes of each bit that it does not leave alone. */
 export interface AsyncControl {
   readonly edge: EdgeNet;
-  readonly values: ReadonlyMap<NetId, Value | 'z'>;
+  readonly values: ReadonlyMap<NetId, AsyncValue>;
 }
 
 /** The clock and the asynchronous controls of an edge-sensitive process, first priority first. */
@@ -33,9 +31,9 @@ export interface Controls {
  * Finds out what the edges of an event list are for.
  *
  * The clock is the one whose signal the body does not read, by itself or in routines that it
- * calls. Each other one must, while it is active and those of higher priority are not, give every
- * bit a constant or leave it alone. So the body is executed with that signal held active, which
- * works for any way of writing the tests.
+ * calls. Each other one, while it is active and those of higher priority are not, gives every bit a
+ * constant, leaves it alone, or loads it. So the body is executed with that signal held active,
+ * which works for any way of writing the tests.
  */
 export function findControls(
   body: Statement,
@@ -101,54 +99,95 @@ function inPriority(
   const found: AsyncControl[] = [];
   let open = edges;
   while (open.length > 0) {
-    let first: AsyncControl | undefined;
-    let obstacle: Position | undefined;
-    for (const edge of open) {
-      const values = valuesUnder(body, edge, found, context);
-      if (values instanceof Map) {
-        first = { edge, values };
-        break;
-      }
-      obstacle ??= values;
-    }
-    if (first === undefined) {
-      refuseLoad(open[0]!, obstacle!, context);
-      return undefined;
-    }
+    const first = firstOf(open, body, found, context);
+    if (first === undefined) return undefined;
     found.push(first);
     open = open.filter((edge) => edge !== first.edge);
   }
   return found;
 }
 
-/** What each bit becomes while a control is active, or where a bit is assigned no constant. */
-function valuesUnder(
+function firstOf(
+  open: readonly EdgeNet[],
+  body: Statement,
+  higher: readonly AsyncControl[],
+  context: Context,
+): AsyncControl | undefined {
+  const loading: TriedControl[] = [];
+  for (const edge of open) {
+    const control = tryControl(body, edge, higher, context);
+    if (control.loads === undefined) return control;
+    loading.push(control);
+  }
+  // What one loads may be what another one does that is tested before it: it reads that one's signal.
+  const isFirst = ({ edge, reads }: TriedControl): boolean =>
+    open.every((other) => other === edge || !reads.has(other.net));
+  const first = loading.find(isFirst) ?? loading[0]!;
+  const reason = first.obstacle ?? swapped(first, body, higher, context);
+  if (reason !== undefined) {
+    refuseLoad(first, reason, context);
+    return undefined;
+  }
+  tellOfLoad(first, context);
+  return first;
+}
+
+/** A control, if it is the one that goes first. */
+interface TriedControl extends AsyncControl {
+  /** Where a bit is loaded with what is no constant; undefined where none is. */
+  readonly loads: Position | undefined;
+  /** Why this is no load. */
+  readonly obstacle: string | undefined;
+  readonly reads: ReadonlySet<NetId>;
+}
+
+function tryControl(
   body: Statement,
   edge: EdgeNet,
   higher: readonly AsyncControl[],
   context: Context,
-): Map<NetId, Value | 'z'> | Position {
+): TriedControl {
   const { logic } = context;
   const fixed = fixedLevels(higher, context);
   fixed.set(edge.net, logic.constant(edge.level));
-  const run = runClocked(body, context, { outside: (net) => fixed.get(net) ?? net });
-  const [written] = run.store.finishWords().filter(({ when }) => logic.valueOf(when) !== 0);
+  const outside = (net: NetId): NetId => fixed.get(net) ?? net;
+  const { store } = runClocked(body, context, { clocked: false, outside });
+  const reads = new Set(store.reads);
+  const [written] = store.finishWords().filter(({ when }) => logic.valueOf(when) !== 0);
   if (written !== undefined) refuseHeld(written, ASYNCHRONOUS, context);
-  const values = new Map<NetId, Value | 'z'>();
-  for (const [key, entry] of run.store.finish()) {
-    if (key < 0 || run.store.loopIndexes.has(key)) continue;
+  const values = new Map<NetId, AsyncValue>();
+  let loads: Position | undefined;
+  let obstacle: string | undefined;
+  for (const [key, entry] of store.finish()) {
+    if (key < 0 || store.loopIndexes.has(key)) continue;
     const isZ = entry.driven !== undefined && logic.valueOf(entry.driven) === 0;
     if (isZ && logic.valueOf(entry.assigned) === 1) {
       values.set(key, 'z');
       continue;
     }
-    const result = run.store.resolve(key, entry);
+    const result = store.resolve(key, entry);
     if (result === key) continue;
-    const value = logic.valueOf(result);
-    if (value === undefined) return context.store.places.get(key)!;
-    values.set(key, value);
+    const constant = logic.valueOf(result);
+    values.set(key, constant ?? entry);
+    if (constant !== undefined) continue;
+    loads ??= store.places.get(key)!;
+    if (entry.driven !== undefined) obstacle = 'may be z';
+    else if (reads.has(key)) obstacle = 'depends on the variable itself';
   }
-  return values;
+  return { edge, values, loads, obstacle, reads };
+}
+
+// A reset whose edge leads to the level at which it is not active looks like a load.
+function swapped(
+  { edge }: TriedControl,
+  body: Statement,
+  higher: readonly AsyncControl[],
+  context: Context,
+): string | undefined {
+  const other = { ...edge, level: edge.level === 1 ? 0 : 1 } as const;
+  const { values } = tryControl(body, other, higher, context);
+  const isReset = [...values.values()].every((value) => !isLoad(value)) && values.size > 0;
+  return isReset ? 'is made at the level at which the signal is not active' : undefined;
 }
 
 const ASYNCHRONOUS = 'is set or reset asynchronously; clear it word by word at clock edges';
@@ -161,14 +200,21 @@ export function fixedLevels(
   return new Map(controls.map(({ edge }) => [edge.net, logic.constant(edge.level === 1 ? 0 : 1)]));
 }
 
-function refuseLoad(edge: EdgeNet, start: Position, context: Context): void {
-  const { shared } = context.scope;
-  const { start: from, end } = edge.event;
-  const span = shared.sources.span(from, end);
-  const text = span.source.slice(span.start, span.end);
+function textOf(edge: EdgeNet, { scope }: Context): string {
+  const { source, start, end } = scope.shared.sources.span(edge.event.start, edge.event.end);
+  return `\`${source.slice(start, end)}\` in the event list`;
+}
+
+function refuseLoad({ edge, loads }: TriedControl, reason: string, context: Context): void {
   const message =
-    `\`${text}\` in the event list must set or reset what it assigns to constants, but this ` +
-    'assignment depends on signals; load it at the clock edge, or test the level that the edge ' +
-    'leads to';
-  refuse(context, { start, end: start }, message);
+    `${textOf(edge, context)} must set, reset or load what it assigns, but this assignment ` +
+    `${reason}; make it at the clock edge, or test the level that the edge leads to`;
+  refuse(context, { start: loads!, end: loads! }, message);
+}
+
+function tellOfLoad({ edge, loads }: TriedControl, context: Context): void {
+  const message =
+    `${textOf(edge, context)} loads what is no constant; as in hardware, the variable follows it ` +
+    'as long as the signal has the level that the edge leads to';
+  report(context.scope.shared, 'sensitivity-incomplete', { start: loads!, end: loads! }, message);
 }

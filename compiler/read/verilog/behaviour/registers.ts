@@ -1,8 +1,8 @@
-import { Edge, Priority } from '../../../circuit/circuit.js';
+import { Edge } from '../../../circuit/circuit.js';
 import type { NetId } from '../../../circuit/ids.js';
-import type { Value } from '../../../circuit/values.js';
 import type { EventSyntax, Statement } from '../syntax.js';
-import { type AsyncControl, type Controls, findControls, fixedLevels } from './asyncControls.js';
+import { type Controls, findControls, fixedLevels } from './asyncControls.js';
+import { type AsyncValue, asyncPins, isLoad } from './asyncPins.js';
 import type { Context } from './context.js';
 import { driveIndex, placeOf } from './drive.js';
 import type { Entry } from './entries.js';
@@ -76,7 +76,10 @@ function buildRegister(
   const { data, enable } = held;
   addRegister({ output: data, own: data, entry, initial, values }, controls, logic);
   const driven = entry && { value: entry.driven ?? logic.one, assigned: entry.assigned };
-  const levels = values.map((value) => (value === undefined ? value : value === 'z' ? 0 : 1));
+  const levels = values.map((value): AsyncValue => {
+    if (isLoad(value)) return { value: logic.one, assigned: value.assigned };
+    return value === undefined ? value : value === 'z' ? 0 : 1;
+  });
   const start = initial === undefined ? initial : 1;
   const shared = { entry: driven, initial: start, values: levels } as const;
   addRegister({ output: enable, own: enable, ...shared }, controls, logic);
@@ -94,11 +97,10 @@ interface RegisterPlan {
   readonly values: readonly AsyncValue[];
 }
 
-type AsyncValue = Value | 'z' | undefined;
-
 function addRegister(plan: RegisterPlan, { clock, asynchronous }: Controls, logic: Logic): void {
   const { output, entry, initial } = plan;
-  const { set, reset, priority, holding } = asyncPins(plan.values, asynchronous, logic);
+  const edges = asynchronous.map(({ edge }) => edge);
+  const { set, reset, priority, holding } = asyncPins(plan.values, edges, logic);
   logic.sink.register({
     output,
     clock: clock.net,
@@ -119,43 +121,4 @@ function dataOf(
 ): NetId {
   if (logic.valueOf(assigned) === 1) return logic.mux(holding, value, output);
   return logic.mux(logic.and(assigned, logic.not(holding)), own, value);
-}
-
-interface AsyncPins {
-  readonly set: NetId;
-  readonly reset: NetId;
-  readonly priority: number;
-  /** Where a control that leaves the bit alone keeps the clock from changing it. */
-  readonly holding: NetId;
-}
-
-// First priority first. A bit set to x or z may become anything, so it is reset.
-function asyncPins(
-  values: readonly AsyncValue[],
-  controls: readonly AsyncControl[],
-  logic: Logic,
-): AsyncPins {
-  const sets: NetId[] = [];
-  const resets: NetId[] = [];
-  let holding = logic.zero;
-  let before = logic.zero;
-  const exclusive = changesBack(values);
-  for (const [i, { edge }] of controls.entries()) {
-    const active = edge.level === 1 ? edge.net : logic.not(edge.net);
-    const value = values[i];
-    const blocked = exclusive ? before : holding;
-    const effective = logic.and(active, logic.not(blocked));
-    if (value === undefined) holding = logic.or(holding, effective);
-    else (value === 1 ? sets : resets).push(effective);
-    before = logic.or(before, active);
-  }
-  const first = values.find((value) => value !== undefined);
-  const priority = first === 1 ? Priority.SetWins : Priority.ResetWins;
-  return { set: logic.any(sets), reset: logic.any(resets), priority, holding };
-}
-
-// Set, reset and set again in order of priority: no single priority tells which of the two wins.
-function changesBack(values: readonly AsyncValue[]): boolean {
-  const sets = values.filter((value) => value !== undefined).map((value) => value === 1);
-  return sets.filter((value, i) => i > 0 && value !== sets[i - 1]).length > 1;
 }

@@ -299,6 +299,40 @@ describe('asynchronous controls', () => {
     );
   });
 
+  it('load what is no constant, between a reset before and a preset after', () => {
+    const { simulate, diagnostics } = bench(`
+      input clk, rst, load, keep, pre; input [1:0] d; reg [1:0] q; reg r;
+      always @(negedge pre or posedge load or posedge clk or negedge rst)
+        if (!rst) begin q <= 2'b01; r <= 0; end
+        else if (load) begin q <= d; if (!keep) r <= d[0] ^ d[1]; end
+        else if (!pre) begin q <= 2'b10; r <= 1; end
+        else begin q <= q + 1; r <= !r; end
+    `);
+    expect(diagnostics.map(({ code }) => code)).toEqual(['sensitivity-incomplete']);
+    const bit = fc.nat(1);
+    const row = fc.record({ rst: bit, load: bit, keep: bit, pre: bit, d: fc.nat(3) });
+    fc.assert(
+      fc.property(fc.array(row), (rows) => {
+        const simulation = simulate();
+        const start = { rst: 0, load: 0, keep: 0, pre: 1, d: 0 };
+        simulation.set({ clk: 0, ...start });
+        let [q, r] = [1, 0];
+        for (const inputs of [start, ...rows]) {
+          const { rst, load, keep, pre, d } = inputs;
+          if (!rst) [q, r] = [1, 0];
+          else if (load) [q, r] = [d, keep ? r : (d >> 1) ^ (d & 1)];
+          else if (!pre) [q, r] = [2, 1];
+          simulation.set(inputs);
+          expect([simulation.number('q'), simulation.number('r')]).toEqual([q, r]);
+          simulation.tick();
+          if (rst && !load && pre) [q, r] = [(q + 1) & 3, 1 - r];
+          expect([simulation.number('q'), simulation.number('r')]).toEqual([q, r]);
+        }
+      }),
+      { seed: 31, numRuns: 40 },
+    );
+  });
+
   it('reset a whole vector by a task, a loop and a constant of another width', () => {
     const simulation = bench(`
       input clk, rst; reg [3:0] q, r, s; integer i;
