@@ -1,12 +1,14 @@
 import type { NetId } from '../../../circuit/ids.js';
+import type { LatchPins } from '../../../circuit/pinTable.js';
 import { listed } from '../../listed.js';
 import type { NameId } from '../../names.js';
-import type { Binding } from '../scope.js';
-import type { EventSyntax, Expression, Statement } from '../syntax.js';
+import type { EventSyntax, Statement } from '../syntax.js';
 import type { Context } from './context.js';
 import { driveBit, driveIndex, placeOf } from './drive.js';
 import type { Entry } from './entries.js';
 import { refuseHeld } from './heldMemory.js';
+import { LatchControlSearch } from './latchControls.js';
+import { netsNamed, netsOf } from './namedNets.js';
 import { forEachName, plainMeaningOf } from './names.js';
 import { pathText, report } from './report.js';
 import type { Changes } from './store.js';
@@ -33,8 +35,11 @@ export function lowerCombinational(
     if (context.logic.valueOf(entry.assigned) === 1) driveEntry(key, entry, context);
     else if (context.logic.valueOf(entry.assigned) !== 0) latched.set(key, entry);
   }
-  for (const [key, entry] of latched) buildLatch(key, entry, context);
-  warnLatches(body, latched, changes.size, context);
+  if (latched.size === 0) return;
+  const isMeant = latched.size === changes.size && !contains(body, 'case');
+  const search = isMeant ? new LatchControlSearch(body, context) : undefined;
+  for (const [key, entry] of latched) buildLatch(key, entry, search, context);
+  if (!isMeant) warnLatches(body, latched, context);
 }
 
 function driveEntry(key: NetId, { value, driven, isCopy }: Entry, context: Context): void {
@@ -46,22 +51,28 @@ function driveEntry(key: NetId, { value, driven, isCopy }: Entry, context: Conte
   }
 }
 
-function buildLatch(key: NetId, { value, assigned, driven }: Entry, context: Context): void {
+function buildLatch(
+  key: NetId,
+  { value, assigned, driven }: Entry,
+  search: LatchControlSearch | undefined,
+  context: Context,
+): void {
   const { shared } = context.scope;
   placeOf(key, context);
   const { sink } = context.logic;
   const initial = shared.initialValues.get(key);
-  const latch = (output: NetId, data: NetId, start: 0 | 1 | undefined): void => {
-    const pins = { output, enable: assigned, data };
+  const latch = (pins: LatchPins, start: 0 | 1 | undefined): void => {
     sink.latch(start === undefined ? pins : { ...pins, initial: start });
   };
   if (driven === undefined) {
-    latch(key, value, initial);
+    const pins = search?.pinsOf(key) ?? { enable: assigned, data: value };
+    latch({ output: key, ...pins }, initial);
     return;
   }
   const held = { data: sink.net(), enable: sink.net() };
-  latch(held.data, value, initial);
-  latch(held.enable, driven, initial === undefined ? undefined : 1);
+  latch({ output: held.data, enable: assigned, data: value }, initial);
+  const start = initial === undefined ? undefined : 1;
+  latch({ output: held.enable, enable: assigned, data: driven }, start);
   shared.driveFloating!(key, held);
 }
 
@@ -94,29 +105,9 @@ function checkSensitivity(
   report(context.scope.shared, 'sensitivity-incomplete', place, message);
 }
 
-/** All nets of the signals that a part of the syntax tree names. */
-export function netsNamed(tree: unknown, context: Context): Set<NetId> {
-  const nets = new Set<NetId>();
-  forEachName(tree, (expression: Extract<Expression, { kind: 'name' }>) => {
-    for (const net of netsOf(plainMeaningOf(expression, context))) nets.add(net);
-  });
-  return nets;
-}
-
-function netsOf(binding: Binding | undefined): readonly NetId[] {
-  if (binding?.kind === 'signal') return binding.nets;
-  return binding?.kind === 'memory' ? binding.words.flat() : [];
-}
-
 // A process in which all is latched, under plain conditions, is how a latch is described. One
 // that also has combinational results, or a case with gaps, more likely forgot a branch.
-function warnLatches(
-  body: Statement,
-  latched: ReadonlyMap<NetId, Entry>,
-  total: number,
-  context: Context,
-): void {
-  if (latched.size === 0 || (latched.size === total && !contains(body, 'case'))) return;
+function warnLatches(body: Statement, latched: ReadonlyMap<NetId, Entry>, context: Context): void {
   const { shared } = context.scope;
   const seen = new Set<NameId>();
   forEachName(body, (expression) => {
