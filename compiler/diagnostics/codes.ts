@@ -69,6 +69,14 @@ export const codeTable = {
     'An inout port of the top module is driven inside; it becomes an output of the model.',
     'Split it into an input and an output where it is both.',
   ),
+  'supply-assumed': note(
+    'An inout port of the top module has the name of a supply and is held at its level.',
+    'Nothing where it is one; else declare it as an input.',
+  ),
+  'supply-absent': note(
+    'Instances connect power pins that the models of their cells do not have.',
+    'Nothing; where the library has them under an `ifdef`, use --define.',
+  ),
   'combinational-loop': warning(
     'Gates feed back to themselves without a register between.',
     'Nothing, where it is a latch made of gates; else break the loop with a register.',

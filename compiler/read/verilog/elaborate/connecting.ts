@@ -1,5 +1,6 @@
 import { GateKind } from '../../../circuit/gates.js';
 import { type NetId, NO_NET } from '../../../circuit/ids.js';
+import { supplyLevel } from '../../../circuit/supplyNames.js';
 import type { Position } from '../../../diagnostics/sourceMap.js';
 import { listed } from '../../listed.js';
 import { hintOf } from '../../nearest.js';
@@ -108,10 +109,19 @@ function portPlace(
   if (ports[position]?.name === name) return position;
   const place = portOfName.get(name);
   if (place !== undefined) return place;
-  const { start, end } = wordBefore(body, name, table.connectionPosition(connection));
+  const text = body.text(name);
+  const at = (): ReturnType<typeof wordBefore> =>
+    wordBefore(body, name, table.connectionPosition(connection));
+  if (supplyLevel(text) !== undefined) {
+    body.design.absentSupplies.add(template.name, text, () => {
+      const { start, end } = at();
+      return body.sources.span(start, end);
+    });
+    return -1;
+  }
+  const { start, end } = at();
   const known = ports.flatMap((port) => (port.name === 0 ? [] : [body.text(port.name)]));
   const list = known.length === 0 ? 'it has none' : `it has ${listed(known)}`;
-  const text = body.text(name);
   const message = `${template.name} has no port ${text}; ${list}${hintOf(text, known)}`;
   body.report('port-unknown', message, start, end);
   return -1;

@@ -4,6 +4,7 @@ import type { Position, SourceMap } from '../../../diagnostics/sourceMap.js';
 import type { NameId, NameTable } from '../../names.js';
 import { type Allowance, Budget, BudgetExceeded, tooLarge } from '../budget.js';
 import type { ModuleSyntax, PrimitiveSyntax, VerilogSyntax } from '../syntax.js';
+import { AbsentSupplies } from './absentSupplies.js';
 import { DrivenNets } from './drivenNets.js';
 import { HELD_FROM } from './heldFrom.js';
 import type { LibraryCell } from './libraryCell.js';
@@ -80,6 +81,7 @@ export class Design {
   readonly unknown: UnknownModules;
   readonly undriven: LimitedReport;
   readonly shadowed: ShadowedModels;
+  readonly absentSupplies = new AbsentSupplies();
   readonly #makers: TemplateMakers;
   /** Index into `modules` by name, or into `primitives` and then `cells` beyond them. */
   readonly #definition = new NameIndex(64);

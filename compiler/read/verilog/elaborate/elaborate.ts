@@ -20,7 +20,7 @@ import { withReplacements } from './replacements.js';
 import { Stamper } from './stamp.js';
 import type { Template } from './template.js';
 import { chooseTop } from './top.js';
-import { addTopPorts, checkTopPorts } from './topPorts.js';
+import { addTopPorts, assumedSupplies, checkTopPorts } from './topPorts.js';
 
 /** What `elaborate` may be told. */
 export interface ElaborateOptions {
@@ -120,6 +120,7 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
   const index = design.template(module.name, noOverrides, module.nameStart);
   design.unknown.report();
   design.shadowed.report();
+  design.absentSupplies.report(design.diagnostics);
   if (index === NO_TEMPLATE) return undefined;
   const top = design.templates[index]!;
   design.finish();
@@ -137,8 +138,8 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
   reserveNames(builder, design, top);
   for (const source of design.sources.sources) builder.addSource(source);
   const stamper = new Stamper(builder, design.templates);
-  const boundary = stamper.stamp(top);
-  addTopPorts(builder, design, top, boundary);
+  const boundary = stamper.stamp(top, assumedSupplies(design, top));
+  addTopPorts(builder, design, top, boundary, (net) => stamper.constants.of(net));
   addBoxPorts(builder, design, stamper.boxes);
   reportLateDrivers(design, builder);
   if (!design.diagnostics.hasErrors) reportBuses(design, resolveBuses(builder));

@@ -68,7 +68,7 @@ export class Stamper {
    */
   readonly #farInitials = new Map<number, { readonly value: 0 | 1; readonly depth: number }>();
   readonly #memories: MemoryStamper;
-  readonly #levels: ConstantNets;
+  readonly constants: ConstantNets;
   /** The black boxes stamped so far. */
   readonly boxes: PlacedBox[] = [];
 
@@ -77,13 +77,21 @@ export class Stamper {
     this.#builder = builder;
     this.#templates = templates;
     this.#memories = new MemoryStamper(builder);
-    this.#levels = new ConstantNets(builder);
+    this.constants = new ConstantNets(builder);
   }
 
-  /** Stamps the top; returns the circuit's nets of its boundary. */
-  stamp(top: Template): Uint32Array {
+  /**
+   * Stamps the top, with constants at some places of its boundary; returns the circuit's nets of
+   * that.
+   */
+  stamp(top: Template, held: ReadonlyMap<number, 0 | 1>): Uint32Array {
     const frame = this.#enter(0, this.#templates.indexOf(top), undefined);
     this.#fill(frame, 0);
+    for (const [place, level] of held) {
+      const net = netId(frame.nets[top.boundary[place]!]!);
+      this.#builder.drive(net, level === 1 ? GateKind.One : GateKind.Zero, []);
+      this.constants.add(net, level);
+    }
     this.#addScopes(frame, top.name, 0);
     this.#memories.add(frame, 0, []);
     const boundary = top.boundary.map((net) => frame.nets[net]!);
@@ -132,7 +140,7 @@ export class Stamper {
     let key = 0;
     for (let place = boundary.length - 1; place > 0; place--) {
       const net = children.port(child, place);
-      const level = net === NO_NET ? -1 : this.#levels.of(nets[net]!);
+      const level = net === NO_NET ? -1 : this.constants.of(nets[net]!);
       key = key * 3 + level + 1;
     }
     return key === 0 ? number : tied(key);
@@ -197,7 +205,7 @@ export class Stamper {
     // What drives each net, for tables: another driver of a bus may have come first.
     const driven = tables.length > 0 ? new Map<number, NetId>() : undefined;
     this.#makeDrivers(frame, driven);
-    for (const [net, level] of template.constants ?? []) this.#levels.add(nets[net]!, level);
+    for (const [net, level] of template.constants ?? []) this.constants.add(nets[net]!, level);
     for (const { output, inputs, table } of tables) {
       const own = inputs.map((net) => netId(nets[net]!));
       this.#builder.table(driven!.get(nets[output]!)!, own, table);
@@ -257,7 +265,7 @@ export class Stamper {
       const [data, control] = this.#translated(recording, nets, start, BusPin.Traits);
       const traits = recording.faninAt(start + BusPin.Traits);
       this.#builder.busPart(output, data!, control!, traits);
-      this.#levels.addPart(output, data!, control!, traits);
+      this.constants.addPart(output, data!, control!, traits);
       return NO_NET;
     }
     const count = kind <= GateKind.Unknown ? 0 : recording.faninEnd(driver) - start;

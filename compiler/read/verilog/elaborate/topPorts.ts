@@ -1,5 +1,6 @@
 import type { CircuitBuilder } from '../../../circuit/builder.js';
 import { type NetId, netId } from '../../../circuit/ids.js';
+import { supplyLevel } from '../../../circuit/supplyNames.js';
 import type { Span } from '../../../diagnostics/source.js';
 import type { ModuleSyntax } from '../syntax.js';
 import type { Design } from './design.js';
@@ -11,44 +12,84 @@ export function checkTopPorts(design: Design, module: ModuleSyntax, top: Templat
   for (const [index, port] of top.ports.entries()) {
     const { start, end } = module.ports[index] ?? module;
     const span = declaredAt(design, top, port) ?? design.sources.span(start, end);
-    const name = design.text(port.name);
     if (port.name === 0 && port.width > 0) {
       const message = `port ${index + 1} of the top module has no name; give it one: .name(…)`;
       design.diagnostics.add('not-supported', message, span);
     } else if (isOutput(top, port)) {
       const open = bitsOf(port).filter((place) => top.drives[place] === Drive.None);
+      const name = design.text(port.name);
       if (open.length > 0) design.undriven.add(openOutput(name, port, open.length), span);
-      if (port.direction === Flag.Inout) {
-        const message =
-          `inout ${name} of the top module is driven inside, so that it becomes an output: ` +
-          'what drives it from outside has no place in a model; split it if it also is an input';
-        design.diagnostics.add('inout-as-output', message, span);
-      }
-    } else if (port.direction === Flag.Input && isDrivenInside(top, port)) {
-      const message = `input ${name} of the top module is also driven inside; leave one of the two drivers`;
-      design.diagnostics.add('net-multiply-driven', message, span);
     }
   }
   for (const { first, second } of top.repeats) checkRepeat(design, module, top, first, second);
 }
 
-/** Gives the circuit the ports of its top module; an inout that is driven inside is an output. */
+/**
+ * The inouts of the top module that nothing inside drives and whose names are those of supplies: by
+ * their place in the boundary, the level that they are held at.
+ */
+export function assumedSupplies(design: Design, top: Template): Map<number, 0 | 1> {
+  const supplies = new Map<number, 0 | 1>();
+  for (const port of top.ports) {
+    if (port.direction !== Flag.Inout || port.width !== 1 || isDrivenInside(top, port)) continue;
+    const name = design.text(port.name);
+    const level = supplyLevel(name);
+    if (level === undefined) continue;
+    supplies.set(port.offset, level);
+    const message =
+      `inout ${name} of the top module is no input but a supply, held at ${level}, ` +
+      'as its name says; declare it as an input where it is one';
+    design.diagnostics.add('supply-assumed', message, declaredAt(design, top, port));
+  }
+  return supplies;
+}
+
+/**
+ * Gives the circuit the ports of its top module; an inout that is driven inside is an output, and
+ * one that a supply drives is no port. `boundary` is in nets of the circuit, and `supply` tells the
+ * level of such a net, or -1.
+ */
 export function addTopPorts(
   builder: CircuitBuilder,
   design: Design,
   top: Template,
   boundary: Uint32Array,
+  supply: (net: number) => number,
 ): void {
   const positions = top.ports.map((port) => declaredAt(design, top, port));
   for (const [index, port] of top.ports.entries()) {
-    if (port.width === 0) continue;
     const nets: NetId[] = bitsOf(port).map((place) => netId(boundary[place]!));
+    if (port.width === 0 || (port.direction !== Flag.Output && nets.every(isSupply))) continue;
     const name = design.text(port.name);
     const range = port.range ?? (port.width > 1 ? { msb: port.width - 1, lsb: 0 } : undefined);
     const span = positions[index];
     if (span !== undefined) builder.at(design.sources.sources.indexOf(span.source), span.start);
+    if (port.direction !== Flag.Output && isDrivenInside(top, port)) {
+      reportDriven(design, port, name, span);
+    }
     if (isOutput(top, port)) builder.output(name, nets, range);
-    else builder.input(name, nets, range);
+    else if (!isDrivenInside(top, port)) builder.input(name, nets, range);
+  }
+
+  function isSupply(net: NetId): boolean {
+    return supply(net) >= 0;
+  }
+}
+
+function reportDriven(
+  { diagnostics }: Design,
+  { direction }: TemplatePort,
+  name: string,
+  span: Span | undefined,
+): void {
+  if (direction === Flag.Inout) {
+    const message =
+      `inout ${name} of the top module is driven inside, so that it becomes an output: ` +
+      'what drives it from outside has no place in a model; split it if it also is an input';
+    diagnostics.add('inout-as-output', message, span);
+  } else {
+    const message = `input ${name} of the top module is also driven inside; leave one of the two drivers`;
+    diagnostics.add('net-multiply-driven', message, span);
   }
 }
 
