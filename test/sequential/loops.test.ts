@@ -89,6 +89,44 @@ describe('a loop that no input closes', () => {
   });
 });
 
+describe('a bus of segments that pass a value on to either side', () => {
+  // Whatever the order of evaluation, one direction takes a round for each segment.
+  const count = 12;
+  const segments = circuitFrom(`
+    module segments (input up, input [${count - 1}:0] driven, value, output [${count - 1}:0] y);
+      assign y = (driven & value) | (~driven & (up ? {y[${count - 2}:0], 1'b0} : y >> 1));
+    endmodule`);
+  /** A segment takes the value of the next driven one on the side that values come from. */
+  const valuesOf = (up: boolean, driven: number, value: number): string => {
+    const segment = (i: number): number => {
+      for (let at = i; at >= 0 && at < count; at += up ? -1 : 1) {
+        if ((driven >>> at) & 1) return (value >>> at) & 1;
+      }
+      return 0;
+    };
+    return Array.from({ length: count }, (_, i) => segment(count - 1 - i)).join('');
+  };
+  const random = new RandomBits(12);
+  const cases = Array.from({ length: 300 }, (_, i) => {
+    const some = (times: number): number =>
+      Array.from({ length: times }, () => random.next() & 0xfff).reduce((a, b) => a & b);
+    const ends = i % 2 === 0 ? 1 : 1 << (count - 1);
+    const driven = i % 3 === 0 ? ends : some(1 + (i % 4));
+    return { up: i % 5 < 2, driven, value: random.next() & 0xfff };
+  });
+  const rows = cases.map(
+    ({ up, driven, value }) => `${Number(up)} ${binary(driven, count)} ${binary(value, count)}`,
+  );
+  const expected = cases.map(({ up, driven, value }) => valuesOf(up, driven, value));
+
+  it.each([false, true])(
+    'settles however far the values go (three values: %s)',
+    async (threeValued) => {
+      expect(await responseTo(segments, rows, { threeValued })).toEqual(expected);
+    },
+  );
+});
+
 describe('the Muller pipeline', () => {
   // Each stage takes over the stage before it where the stage after it has the other value (D. E.
   // Muller; J. Sparsø, S. Furber, "Principles of Asynchronous Circuit Design", 2001, chapter 2).

@@ -15,14 +15,22 @@ export interface LoopPlan {
 const TRIALS = 2187;
 /** Net evaluations spent on one loop; large loops are tried on fewer combinations. */
 const BUDGET = 2_000_000;
+/** Where a sample takes no more rounds, there is hardly a combination that does. */
+const FEW_ROUNDS = 3;
+/** Net evaluations that more rounds than those of the sample may be unrolled into. */
+const MOST_UNROLLED = 100_000;
 
 /**
  * Tries a loop out on plain values: all combinations of what it reads and remembers, or a random
  * sample. Values that are the same literal, or its inverse, are one variable; constants are none.
+ *
+ * A sample tells little of a loop along which values go far, net by net, in a few combinations. A
+ * round decides at least one more of the `remembered` nets there, so that it is given as many.
  */
 export function planLoop(
   context: DriverContext,
   nets: Uint32Array,
+  remembered: number,
   start: readonly NetValue[],
   outsideNets: Uint32Array,
   outside: (net: number) => NetValue,
@@ -51,7 +59,11 @@ export function planLoop(
     if (run.rounds === limit) settles = false;
     else rounds = Math.max(rounds, run.rounds);
   }
-  return { rounds, isProven: settles && trials.areExhaustive };
+  if (trials.areExhaustive) return { rounds, isProven: settles };
+  const enough = remembered + 1;
+  const isAffordable = enough * nets.length <= MOST_UNROLLED;
+  if (rounds > FEW_ROUNDS && isAffordable) rounds = Math.max(rounds, enough);
+  return { rounds, isProven: false };
 }
 
 /** A value as a constant, a variable, or a variable's inverse. */

@@ -29,7 +29,14 @@ export function settleLoop(
   if (isUnchanged(settled, loop, start, outside)) return start;
   const plan = readsMemory(moment, nets)
     ? { rounds: Math.min(roundLimit(nets.length), MEMORY_ROUNDS), isProven: false }
-    : planLoop(moment, nets, start, loops.outside(loop), outside);
+    : planLoop(
+        moment,
+        nets,
+        nets.filter((net) => remembers(moment, net)).length,
+        start,
+        loops.outside(loop),
+        outside,
+      );
   const rounds = new Rounds(moment, nets, outside);
   const { values } = rounds.run(start, plan.rounds);
   if (plan.isProven) return values;
