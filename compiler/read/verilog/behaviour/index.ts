@@ -14,7 +14,7 @@ export { lowerAlways } from './always.js';
 export { isPureFunction } from './constantCalls.js';
 export { lowerInitial } from './initial.js';
 export { lowerScalarAssign } from './scalars.js';
-export { isBare, walk } from './walk.js';
+export { assignedNames, isBare, walk } from './walk.js';
 
 /**
  * The value of a constant expression (IEEE 1364-2005, clause 5), in its own width and sign.

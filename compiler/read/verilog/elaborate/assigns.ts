@@ -15,6 +15,7 @@ import type { Expression } from '../syntax.js';
 import type { BlockScope } from './blockScope.js';
 import type { Located, ModuleBody } from './body.js';
 import { forEachTarget } from './expressions.js';
+import { isIdle } from './idleProcesses.js';
 import { strengthsOf } from './strengths.js';
 import { ensureDeclared } from './terminals.js';
 
@@ -41,9 +42,10 @@ export function lowerProcesses(body: ModuleBody): void {
     setInitialValue(body, scope, target, value);
   }
   for (const { scope, item } of body.initials) lowerInitial(item, scope);
-  for (const { scope, item } of body.processes) {
-    body.buildAt(item.start);
-    lowerAlways(item, scope);
+  for (const process of body.processes) {
+    if (isIdle(process, body.module)) continue;
+    body.buildAt(process.item.start);
+    lowerAlways(process.item, process.scope);
   }
 }
 
