@@ -1,12 +1,12 @@
 import { type Logic, LogicOp } from '../logic/logic.js';
 
 /**
- * Most nodes of a block, and the part of them that it has at least. Functions of 300 to 2,000 operations run equally fast; beyond
- * some 6,000 the optimizing tier of a WebAssembly engine may fall back to a weaker register
- * allocator.
+ * Most nodes of a block. Functions of 300 to 2,000 operations run equally fast; beyond some 6,000 the
+ * optimizing tier of a WebAssembly engine may fall back to a weaker register allocator.
  */
-const LEAST_PART = 5 / 12;
 const MOST = 1200;
+/** The part of them that a block has at least. */
+const LEAST_PART = 5 / 12;
 
 /**
  * Cuts an order of nodes into blocks, each to become one function: `most` nodes or at least

@@ -64,7 +64,8 @@ const Local = {
  * the inputs stay too, a cycle costs a comparison of rows; where one row is held and nobody looks,
  * all of them cost nothing.
  *
- * It looks after 1, 2, 4 cycles and so on, up to `mostPace`, so that a circuit which never rests hardly notices.
+ * It looks after 1, 2, 4 cycles and so on, up to `mostPace`, so that a circuit which never rests
+ * hardly notices.
  */
 export function addQuietLoop(
   wasm: typeof binaryen,

@@ -14,12 +14,12 @@ const ROUNDS = 12;
  */
 export function fallingPolarity(logic: Logic, keepsStates = false): Uint8Array {
   const states = new Uint8Array(logic.states.length);
-  let best = fall(logic, states);
+  let fallen = fall(logic, states);
+  let best = fallen;
   let fewest = inversions(logic, best, states);
   for (let round = 1; round < ROUNDS && fewest > 0 && !keepsStates; round++) {
-    const inverted = round === 1 ? best : fall(logic, states);
-    for (const [bit, literal] of logic.next.entries()) states[bit] = parity(inverted, literal);
-    const fallen = fall(logic, states);
+    for (const [bit, literal] of logic.next.entries()) states[bit] = parity(fallen, literal);
+    fallen = fall(logic, states);
     const count = inversions(logic, fallen, states);
     if (count >= fewest) continue;
     best = fallen;

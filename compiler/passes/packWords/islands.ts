@@ -16,9 +16,9 @@ const LEAST_REPEATED = 0.75;
  * of which depends on all others, over registers, such as the cores of a chip.
  *
  * Islands have little to do with each other: vectors that hold lanes of several bring together what
- * is wanted apart. Only where there are enough equal ones to fill all lanes, or many that repeat too
- * little within themselves, they are none. `shape` is equal for nodes that look alike, of which `least` at least
- * are worth packing.
+ * is wanted apart. Only where there are enough equal ones to fill all lanes, or many that repeat
+ * too little within themselves, they are none. `shape` is equal for nodes that look alike, of which
+ * at least `least` are worth packing.
  */
 export function islandsOf(logic: Logic, shape: Uint32Array, least: number): Uint32Array {
   const { op, a, b, c, next, nodeCount } = logic;
