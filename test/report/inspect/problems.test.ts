@@ -140,8 +140,8 @@ describe('inspect finds', () => {
     );
     expect(problemOf(text + flop, 'register-unclocked')).toMatchObject({
       severity: 'warning',
-      message: 'no clock port moves the clock pin of 1 register: r (top.v:8)',
-      place: '8:24',
+      message: 'no clock port moves the clock pin of 1 register: r (top.v:4)',
+      place: '4:1',
     });
   });
 
@@ -209,7 +209,7 @@ describe('inspect finds', () => {
     expect(severity).toBe('warning');
     expect(message).toBe(
       '1 register captures values from registers on another clock: ' +
-        'a (top.v:9) on clk_a to q (top.v:9) on clk_b',
+        'a (top.v:3) on clk_a to q (top.v:5) on clk_b',
     );
   });
 
@@ -241,7 +241,7 @@ describe('inspect finds', () => {
       severity: 'note',
       message:
         '3 gates lead to no output, register or latch; ' +
-        'nothing reads t (top.v:5), f.qn (top.v:10)',
+        'nothing reads t (top.v:5), f.qn (top.v:3)',
       place: '5:1',
     });
   });
@@ -270,7 +270,7 @@ describe('inspect finds', () => {
       severity: 'note',
       message:
         'no output depends on 2 registers and latches, not even through others: ' +
-        'a (top.v:9), b (top.v:9)',
+        'a (top.v:4), b (top.v:5)',
     });
   });
 
@@ -286,5 +286,29 @@ describe('inspect finds', () => {
   it('nothing in a netlist without faults', () => {
     const text = netlist('input clk, d, output q, n', 'flop f (.ck(clk), .d(d), .q(q), .qn(n));');
     expect(inspectNetlist(text + flop).problems).toEqual([]);
+  });
+});
+
+describe('a problem inside an instance', () => {
+  const top = netlist('input c, d, output q', 'part u (.c(c), .d(d), .q(q));');
+  const placeOf = (part: string): string => problemOf(`${top}\n${part}`, 'register-no-start').place;
+
+  it('is placed at the instance where it has a cell, with celldefine or without', () => {
+    const flop = 'module part (input c, d, output reg q);\nalways @(posedge c) q <= d; endmodule';
+    expect(placeOf(flop)).toBe('2:1');
+    expect(placeOf(`\`celldefine\n${flop}\n\`endcelldefine`)).toBe('2:1');
+  });
+
+  it('is placed inside where the module is more than a cell', () => {
+    const two = `module part (input c, d, output reg q);
+      reg p;
+      always @(posedge c) begin p <= d; q <= p; end endmodule`;
+    expect(placeOf(two)).toMatch(/^6:/);
+    const wide = `module part (input c, d, output reg [0:0] q, input [1:0] more);
+      always @(posedge c) q <= d; endmodule`;
+    expect(placeOf(wide)).toMatch(/^5:/);
+    const flop = 'module flop (input c, d, output reg q);\nalways @(posedge c) q <= d; endmodule';
+    const around = `module part (input c, d, output q);\nflop f (c, d, q); endmodule\n${flop}`;
+    expect(placeOf(around)).toBe('5:1');
   });
 });

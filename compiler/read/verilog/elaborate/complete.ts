@@ -15,6 +15,7 @@ import {
 import { fuseBuffers } from './fuseBuffers.js';
 import type { Boundary } from './ports.js';
 import { pruneUnused } from './pruning.js';
+import { isSmallCell } from './smallCells.js';
 import { Drive, type Repeat, type Template } from './template.js';
 import { mayBeUndriven, reportUndriven } from './undriven.js';
 import { type Usage, usageOf, usesOf } from './usage.js';
@@ -46,7 +47,7 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
   const constants = constantNetsOf(builder, usage, nets, find, defaults);
   const template: Template = {
     name: body.text(module.name),
-    isCell: module.isCell,
+    isCell: module.isCell || isSmallCell(body, boundary),
     recording: builder,
     children,
     canonical,
