@@ -1,6 +1,8 @@
 import { existsSync, readFileSync, statSync } from 'node:fs';
 import { readFile, stat } from 'node:fs/promises';
 import { dirname } from 'node:path';
+import { promisify } from 'node:util';
+import { gunzip } from 'node:zlib';
 import { type Command, InvalidArgumentError } from 'commander';
 import type { NetlistCache } from '../cache/netlistCache.js';
 import type { Circuit } from '../circuit/circuit.js';
@@ -131,12 +133,15 @@ async function readSource(path: string, diagnostics: Diagnostics): Promise<Sourc
       diagnostics.add('file-unreadable', `${path} cannot be read: it is a device, not a file`);
       return undefined;
     }
-    return new Source(path, await readFile(path));
+    const bytes = await readFile(path);
+    return new Source(path, /\.gz$/i.test(path) ? await unpack(bytes) : bytes);
   } catch (error) {
     diagnostics.add('file-unreadable', `${path} cannot be read: ${reason(error)}`);
     return undefined;
   }
 }
+
+const unpack = promisify(gunzip);
 
 // Undefined where there is no such file: the next folder may have it, and the reader reports it
 // if none has.
@@ -160,6 +165,7 @@ export function reason(error: unknown): string {
   if (code === 'EISDIR') return 'it is a directory';
   if (code === 'EACCES') return 'access is denied';
   if (code === 'ENOSPC') return 'no space is left for it';
+  if (code === 'Z_DATA_ERROR' || code === 'Z_BUF_ERROR') return 'it is no whole gzip file';
   return error instanceof Error ? error.message : String(error);
 }
 

@@ -36,14 +36,19 @@ export interface NetlistReadOptions extends PreprocessOptions {
 const formOfEnding: Readonly<Record<string, 'verilog' | 'bench' | 'liberty'>> = {
   '.v': 'verilog',
   '.vh': 'verilog',
+  '.vg': 'verilog',
+  '.gv': 'verilog',
+  '.sv': 'verilog',
+  '.verilog': 'verilog',
   '.bench': 'bench',
   '.lib': 'liberty',
+  '.liberty': 'liberty',
 };
 
 /**
- * Reads netlist files, together one design, into a circuit: `.v` and `.vh` Verilog, `.lib` Liberty
- * cell libraries for it, `.bench` the ISCAS'89 text form, which stands alone. Where several files
- * model a cell, the first one decides, and a note says so.
+ * Reads netlist files, together one design, into a circuit: `.v` and its like Verilog, `.lib` Liberty
+ * cell libraries for it, `.bench` the ISCAS'89 text form, which stands alone; `.gz` behind these is
+ * passed over. Where several files model a cell, the first one decides, and a note says so.
  *
  * Returns undefined if anything is wrong, having reported it. Throws RangeError without sources.
  */
@@ -138,7 +143,9 @@ function errorsIn({ list }: Diagnostics): number {
   return list.reduce((count, { severity }) => (severity === 'error' ? count + 1 : count), 0);
 }
 
-const endingOf = ({ path }: Source): string => /\.[^./\\]*$/.exec(path)?.[0].toLowerCase() ?? '';
+// Before `.gz`: who made the source has unpacked it.
+const endingOf = ({ path }: Source): string =>
+  /(\.[^./\\]*?)(?:\.gz)?$/i.exec(path)?.[1]?.toLowerCase() ?? '';
 
 function formOf(source: Source, diagnostics: Diagnostics) {
   const ending = endingOf(source);

@@ -1,3 +1,4 @@
+import { gzipSync } from 'node:zlib';
 import { describe, expect, it } from 'vitest';
 import type { Inspection } from '../../compiler/report/inspection.js';
 import { WorkFolder } from '../support/command.js';
@@ -46,6 +47,21 @@ describe('inspect', () => {
         column: 3,
       },
     ]);
+  });
+
+  it('unpacks netlists and refuses those that are no whole gzip files', async () => {
+    const packed = gzipSync(mixed);
+    folder.write('mixed.v.gz', packed);
+    folder.write('cut.v.gz', packed.subarray(0, 40));
+    const plain = await folder.run('inspect', 'mixed.v');
+    const { stdout, status } = await folder.run('inspect', 'mixed.v.gz');
+    expect(status).toBe(0);
+    expect(stdout.replaceAll('mixed.v.gz', 'mixed.v')).toBe(plain.stdout);
+    const cut = await folder.run('inspect', 'cut.v.gz');
+    expect(cut.status).toBe(2);
+    expect(cut.stderr).toBe(
+      'error: cut.v.gz cannot be read: it is no whole gzip file [file-unreadable]\n',
+    );
   });
 
   it('prints the same as a page of text', async () => {

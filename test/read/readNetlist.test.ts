@@ -24,6 +24,19 @@ describe('readNetlist', () => {
     expect(circuit!.sources.map(({ path }) => path)).toEqual(['t.v', 'lib/cells.V']);
   });
 
+  it('knows the endings that flows give to their files, packed or not', () => {
+    const named = 'module t (input a, output y); INV u (.a(a), .y(y)); endmodule';
+    const cells =
+      'library (t) { cell (INV) { pin (a) { } pin (y) { direction : output; function : "!a"; } } }';
+    for (const ending of ['v', 'vg', 'gv', 'sv', 'verilog', 'V.GZ', 'v.gz']) {
+      const files = { [`t.${ending}`]: named, 'cells.liberty': cells };
+      expect(read(files).problems, ending).toEqual([]);
+    }
+    expect(read({ 't.v': named, 'cells.lib.gz': cells }).problems).toEqual([]);
+    expect(read({ 'dir/c.bench.gz': bench }).circuit!.name).toBe('c');
+    expect(read({ 'c.gz': bench }).problems).toEqual(['file-kind-unknown c.gz']);
+  });
+
   it('reads the ISCAS text form', () => {
     expect(read({ 'dir.v/c.bench': bench }).circuit!.name).toBe('c');
     expect(read({ 'c.bench': bench }, { top: 'c' }).circuit!.name).toBe('c');

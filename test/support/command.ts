@@ -40,7 +40,7 @@ export class WorkFolder {
   }
 
   /** Writes a file; returns its name. */
-  write(name: string, content: string): string {
+  write(name: string, content: string | Uint8Array): string {
     writeFileSync(join(this.path, name), content);
     return name;
   }

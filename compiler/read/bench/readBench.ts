@@ -168,7 +168,7 @@ class BenchReader {
     for (const name of this.#outputs.keys()) {
       builder.output(this.#nets.text(name), [this.#nets.net(name)]);
     }
-    const name = this.#source.path.replace(/^.*[/\\]/, '').replace(/\.bench$/i, '');
+    const name = this.#source.path.replace(/^.*[/\\]/, '').replace(/\.bench(\.gz)?$/i, '');
     this.#nets.publish(name);
     return builder.finish(name);
   }
