@@ -137,6 +137,12 @@ describe('a text may hold', () => {
       1,
     ],
     [
+      '12.3 constants at inouts that are only read',
+      "module c (input A, inout VDD, inout [1:0] K, output Y); assign Y = A & VDD & (K == 2); endmodule module t (input a, output y); c u (.A(a), .VDD(1'b1), .K({1'b1, 1'b0}), .Y(y)); endmodule",
+      { a: 1 },
+      1,
+    ],
+    [
       '12.4 nested generate blocks',
       'module t (input [7:0] a, output [7:0] y); genvar i, j; generate for (i = 0; i < 2; i = i + 1) begin : o for (j = 3; j >= 0; j = j - 1) begin : n localparam K = i * 4 + j; case (K % 3) 0: assign y[K] = ~a[K]; 1, 2: begin : b assign y[K] = a[K]; end endcase end end endgenerate endmodule',
       { a: 0 },

@@ -1,9 +1,9 @@
 import type { NameId } from '../../names.js';
 import type { Context } from './context.js';
 
-// Clause 17, and the tasks of later standards that report.
+// Clauses 16 and 17, and the tasks of later standards that report.
 const tasks =
-  /^\$(f?(display|write|strobe|monitor)[bho]?|monitor(on|off)|finish|stop|fclose|fflush|dump\w+|timeformat|printtimescale|fatal|error|warning|info)$/;
+  /^\$(f?(display|write|strobe|monitor)[bho]?|monitor(on|off)|finish|stop|fclose|fflush|dump\w+|timeformat|printtimescale|sdf_annotate|fatal|error|warning|info)$/;
 
 /** Whether a path names a task that prints, writes waveforms or steers a simulation. */
 export function showsOnly(path: readonly NameId[], { scope }: Pick<Context, 'scope'>): boolean {

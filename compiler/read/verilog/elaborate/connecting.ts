@@ -10,7 +10,7 @@ import { type ModuleBody, NOT_PLACED } from './body.js';
 import { fitted } from './fitting.js';
 import { connectGate } from './gateInstances.js';
 import { Flag } from './symbols.js';
-import type { Template, TemplatePort } from './template.js';
+import { Drive, type Template, type TemplatePort } from './template.js';
 import { connectionExpression, drivenNets, NOT_SIMPLE, readNets, simpleNet } from './terminals.js';
 import { connectUnknownBox } from './unknownBoxes.js';
 import { wordBefore } from './wordNear.js';
@@ -156,9 +156,9 @@ function connectPort(
   connection: number,
   port: TemplatePort,
 ): void {
-  const { scope, child, count } = connected;
+  const { scope, child, count, template } = connected;
   const table = body.module.instances;
-  const drives = port.direction !== Flag.Input;
+  const drives = mayDrive(template, port);
   if (port.width === 1 && count === 1) {
     const net = simpleNet(body, scope, table, connection, drives);
     if (net !== NOT_SIMPLE) {
@@ -185,6 +185,15 @@ function connectPort(
       if (net !== undefined) connectNet(body, child + element, port.offset + bit, net);
     }
   }
+}
+
+// An inout that is only read, such as a supply pin, may be tied to a constant as an input is.
+function mayDrive({ drives }: Template, { direction, offset, width }: TemplatePort): boolean {
+  if (direction === Flag.Input || direction === Flag.Output) return direction === Flag.Output;
+  for (let place = offset; place < offset + width; place++) {
+    if (drives[place] !== Drive.None) return true;
+  }
+  return false;
 }
 
 /** Bits beyond those of an output port get 0, as in an assignment of a shorter value. */
