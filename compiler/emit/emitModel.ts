@@ -56,76 +56,30 @@ export function emitModel(
   layout: ModelLayout,
   { comparesState = false, passes = {} }: EmitOptions = {},
 ): WasmModel {
-  const { programs, pattern, memories: shapes, derived } = cyclePrograms;
+  const { programs, derived } = cyclePrograms;
   const module = new wasm.Module();
   try {
     module.setFeatures(wasm.Features.SIMD128 | wasm.Features.MutableGlobals);
-    const layouts = programs.map(layArea);
-    const size = Math.max(...layouts.map((area) => area.size));
-    const areas = [FIRST_AREA, FIRST_AREA + size] as const;
-    const patternAt = FIRST_AREA + 2 * size;
     // A loop that looks for a state counts the cycles.
     const isGuarded = passes.guards !== false && !comparesState && canBeQuiet(cyclePrograms);
-    const mask = isGuarded ? stateMask(programs[0]!) : new Uint8Array();
-    const maskAt = patternAt + Math.ceil(pattern.length / 64) * 64;
-    const contents = maskAt + Math.ceil(mask.length / 64) * 64;
-    const memories = layMemories(shapes, layout.threeValued, contents);
-    const pool = new ConstantPool(Math.ceil(memories.end / 64) * 64);
+    const plan = planOf(cyclePrograms, layout, isGuarded);
+    const { areas, maskAt } = plan;
     addGlobals(module, wasm.i32, areas[0]);
     const writes = isGuarded && programs[0]!.writes.length > 0;
     if (writes) module.addGlobal(WROTE, wasm.i32, true, module.i32.const(0));
-    const cycles = programs.map((program, index) =>
-      cycleCode(wasm, module, program, {
-        ...{ area: layouts[index]!, memories, pool, index, passes },
-        ...(writes && { wrote: WROTE }),
-      }),
-    );
-    const parameters = wasm.createType(new Array(RunLocal.Current).fill(wasm.i32));
-    const localCount = Math.max(...cycles.map((cycle) => cycle.localCount));
-    const locals = new Array<binaryen.Type>(localCount - RunLocal.Current).fill(wasm.i32);
-    const areaSum = areas[0] + areas[1];
-    const { fences = true, holdStates = true } = passes;
-    const ahead =
-      holdStates && !comparesState && canHold(cyclePrograms)
-        ? addHeldLoop(wasm, module, programs[0]!, {
-            ...{ area: layouts[0]!, memories, pool, fences, areaSum },
-          })
-        : undefined;
-    const place = {
-      ...(ahead && { ahead }),
-      ...{ areaSum, patternAt, patternLength: pattern.length },
-      ...(comparesState && {
-        afterCycle: (leave: () => binaryen.ExpressionRef) =>
-          compareState(wasm, module, programs[0]!.stateCount, leave).afterCycle,
-      }),
-    };
     const name = isGuarded ? 'cycles' : 'run';
-    module.addFunction(
-      name,
-      parameters,
-      wasm.i32,
-      locals,
-      runLoop(module, wasm.i32, place, cycles),
-    );
+    addRun(wasm, module, name, cyclePrograms, plan, { comparesState, passes, writes });
     if (isGuarded) {
       const [program] = programs as [Program];
       addQuietLoop(wasm, module, name, { areas, maskAt, program, writes, layout });
     } else module.addFunctionExport(name, name);
     if (passes.tables !== false && canHaveTable(cyclePrograms, layout))
       addTableLoop(wasm, module, layout);
-    const segments = [
-      { at: patternAt, data: pattern },
-      ...(mask.length > 0 ? [{ at: maskAt, data: mask }] : []),
-      ...segmentsOf(memoryImage(memories)).map(({ at, data }) => ({ at: contents + at, data })),
-      ...(pool.data.data.length > 0 ? [pool.data] : []),
-    ].map(({ at, data }, i) => ({ name: `data${i}`, offset: module.i32.const(at), data }));
-    const buffers = Math.ceil(pool.end / 64) * 64;
-    const pages = Math.ceil(buffers / 65536);
-    module.setMemory(pages, 65536, 'memory', segments, false, false, '0');
+    const buffers = setMemory(module, cyclePrograms, plan);
     return {
       bytes: Uint8Array.from(module.emitBinary()),
       layout,
-      memory: { areas, contents, buffers },
+      memory: { areas, contents: plan.contents, buffers },
       states: programs[0]!.states,
       stateInverted: programs[0]!.stateInverted,
       ...(derived && derived.length > 0 && { derived }),
@@ -136,6 +90,96 @@ export function emitModel(
   } finally {
     module.dispose();
   }
+}
+
+/** What stands where in the memory of a module, in this order, and constants behind it all. */
+interface MemoryPlan {
+  /** The layout of an area by each program. */
+  readonly layouts: readonly AreaLayout[];
+  readonly areas: readonly [number, number];
+  readonly patternAt: number;
+  /** See `stateMask`; empty where nothing looks for cycles in which nothing changes. */
+  readonly mask: Uint8Array;
+  readonly maskAt: number;
+  /** Address of the contents of the memories. */
+  readonly contents: number;
+  readonly memories: MemoryPlaces;
+  readonly pool: ConstantPool;
+}
+
+const roundUp = (value: number): number => Math.ceil(value / 64) * 64;
+
+function planOf(
+  { programs, pattern, memories: shapes }: CyclePrograms,
+  { threeValued }: ModelLayout,
+  isGuarded: boolean,
+): MemoryPlan {
+  const layouts = programs.map(layArea);
+  const size = Math.max(...layouts.map((area) => area.size));
+  const areas = [FIRST_AREA, FIRST_AREA + size] as const;
+  const patternAt = FIRST_AREA + 2 * size;
+  const mask = isGuarded ? stateMask(programs[0]!) : new Uint8Array();
+  const maskAt = patternAt + roundUp(pattern.length);
+  const contents = maskAt + roundUp(mask.length);
+  const memories = layMemories(shapes, threeValued, contents);
+  const pool = new ConstantPool(roundUp(memories.end));
+  return { layouts, areas, patternAt, mask, maskAt, contents, memories, pool };
+}
+
+/** Fills the memory with what it holds at first; returns where that ends. */
+function setMemory(
+  module: binaryen.Module,
+  { pattern }: CyclePrograms,
+  { patternAt, mask, maskAt, contents, memories, pool }: MemoryPlan,
+): number {
+  const segments = [
+    { at: patternAt, data: pattern },
+    ...(mask.length > 0 ? [{ at: maskAt, data: mask }] : []),
+    ...segmentsOf(memoryImage(memories)).map(({ at, data }) => ({ at: contents + at, data })),
+    ...(pool.data.data.length > 0 ? [pool.data] : []),
+  ].map(({ at, data }, i) => ({ name: `data${i}`, offset: module.i32.const(at), data }));
+  const end = roundUp(pool.end);
+  module.setMemory(Math.ceil(end / 65536), 65536, 'memory', segments, false, false, '0');
+  return end;
+}
+
+/** Adds the function that runs cycles, not exported yet. */
+function addRun(
+  wasm: typeof binaryen,
+  module: binaryen.Module,
+  name: string,
+  cyclePrograms: CyclePrograms,
+  { layouts, areas, patternAt, memories, pool }: MemoryPlan,
+  { comparesState, passes, writes }: Required<EmitOptions> & { readonly writes: boolean },
+): void {
+  const { programs, pattern } = cyclePrograms;
+  const cycles = programs.map((program, index) =>
+    cycleCode(wasm, module, program, {
+      ...{ area: layouts[index]!, memories, pool, index, passes },
+      ...(writes && { wrote: WROTE }),
+    }),
+  );
+  const { fences = true, holdStates = true } = passes;
+  const areaSum = areas[0] + areas[1];
+  const ahead =
+    holdStates && !comparesState && canHold(cyclePrograms)
+      ? addHeldLoop(wasm, module, programs[0]!, {
+          ...{ area: layouts[0]!, memories, pool, fences, areaSum },
+        })
+      : undefined;
+  const place = {
+    ...(ahead && { ahead }),
+    ...{ areaSum, patternAt, patternLength: pattern.length },
+    ...(comparesState && {
+      afterCycle: (leave: () => binaryen.ExpressionRef) =>
+        compareState(wasm, module, programs[0]!.stateCount, leave).afterCycle,
+    }),
+  };
+  const localCount = Math.max(...cycles.map((cycle) => cycle.localCount));
+  const locals = new Array<binaryen.Type>(localCount - RunLocal.Current).fill(wasm.i32);
+  const parameters = wasm.createType(new Array(RunLocal.Current).fill(wasm.i32));
+  const body = runLoop(module, wasm.i32, place, cycles);
+  module.addFunction(name, parameters, wasm.i32, locals, body);
 }
 
 function addGlobals(module: binaryen.Module, i32: binaryen.Type, firstArea: number): void {
