@@ -18,6 +18,8 @@ export interface Constant {
   /** 0 ≤ value < 2^width, also for signed constants (two's complement). */
   readonly value: bigint;
   readonly unknown: bigint;
+  /** The real number of which the bits are the rounded value. */
+  readonly real?: number;
 }
 
 /** What a name means inside one instance of a module. */
@@ -179,6 +181,8 @@ export interface Scope {
    * scope cannot tell.
    */
   netOf?(name: NameId, index: number | undefined, drives: boolean): number;
+  /** The value of a real parameter seen from here; undefined for any other name. */
+  realOf?(name: NameId): number | undefined;
   /** Why a name does not resolve although it is declared; undefined where it is not. */
   unusable?(name: NameId): Unusable | undefined;
   /** The names that can be used here, for a message about one that cannot. */

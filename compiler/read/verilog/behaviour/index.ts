@@ -13,20 +13,21 @@ import { constantIn, plainNumber } from './widths.js';
 export { lowerAlways } from './always.js';
 export { isPureFunction } from './constantCalls.js';
 export { lowerInitial } from './initial.js';
+export { isRealFunction } from './realConstant.js';
 export { lowerScalarAssign } from './scalars.js';
 export { assignedNames, isBare, walk } from './walk.js';
 
 /**
  * The value of a constant expression (IEEE 1364-2005, clause 5), in its own width and sign.
  *
- * Signals may not be read; constant functions may be called. A real number that stands alone is
- * rounded to a whole one. Returns undefined after a diagnostic.
+ * Signals may not be read; constant functions may be called. Real numbers are worked out as such and
+ * rounded in the end. Returns undefined after a diagnostic.
  */
 export function evaluateConstant(expression: Expression, scope: Scope): Constant | undefined {
   scope.shared.budget.begin(expression);
   return (
     plainNumber(expression) ??
-    realConstant(expression) ??
+    realConstant(expression, scope, evaluateConstant) ??
     withConstants(scope, (context) => constantIn(expression, context))
   );
 }

@@ -17,7 +17,7 @@ import type {
 import type { Item, RoutineItem } from '../syntax.js';
 import type { Recording } from './recording.js';
 import { Flag, REAL_VALUE, SymbolKind, SymbolTable } from './symbols.js';
-import { unusableName } from './unusableName.js';
+import { isFraction, realParameter, unusableName } from './unusableName.js';
 
 /** Width up to which the binding of a signal is made anew each time. */
 const NARROW = 4;
@@ -125,6 +125,12 @@ export class BlockScope implements Scope {
     return -1;
   }
 
+  realOf(name: NameId): number | undefined {
+    const owner = this.owner(name);
+    const symbol = owner?.symbols.find(name) ?? -1;
+    return owner === undefined ? undefined : realParameter(owner, symbol);
+  }
+
   block(name: NameId): BlockScope | undefined {
     const symbol = this.symbols.find(name);
     if (symbol < 0 || this.symbols.kind(symbol) !== SymbolKind.Block) return undefined;
@@ -199,7 +205,9 @@ export class BlockScope implements Scope {
       case SymbolKind.Memory:
         return this.#memory(symbol);
       case SymbolKind.Parameter:
-        return value >= REAL_VALUE ? undefined : this.#parameter(symbol);
+        return value >= REAL_VALUE || isFraction(realParameter(this, symbol))
+          ? undefined
+          : this.#parameter(symbol);
       case SymbolKind.Routine:
         return { kind: 'routine', syntax: this.routines[value]!, scope: this };
       default:

@@ -34,8 +34,9 @@ export function numberOf({ width, signed, value, unknown }: Constant): number | 
   return Number.isSafeInteger(number) ? number : undefined;
 }
 
-/** Whether a constant is true: some bit is 1. */
-export const isTrue = (constant: Constant): boolean => (constant.value & ~constant.unknown) !== 0n;
+/** Whether a constant is true: some bit is 1, or it is a real number other than 0. */
+export const isTrue = ({ value, unknown, real }: Constant): boolean =>
+  real === undefined ? (value & ~unknown) !== 0n : real !== 0;
 
 /** The indices of a range, or undefined after a report: of more than `most` elements, say. */
 export function evaluateRange(

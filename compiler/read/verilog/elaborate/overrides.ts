@@ -25,5 +25,5 @@ export function overridesKey({ values, deep }: Overrides): string {
   return parts.join();
 }
 
-const constantKey = ({ width, signed, value, unknown }: Constant): string =>
-  `${width}${signed ? 's' : 'u'}${value}/${unknown}`;
+const constantKey = ({ width, signed, value, unknown, real }: Constant): string =>
+  `${width}${signed ? 's' : 'u'}${value}/${unknown}${real === undefined ? '' : ` ${real}`}`;

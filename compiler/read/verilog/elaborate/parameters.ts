@@ -1,9 +1,9 @@
-import { evaluateConstant } from '../behaviour/index.js';
+import { evaluateConstant, isRealFunction, walk } from '../behaviour/index.js';
 import type { Constant } from '../scope.js';
-import type { Item, ParameterItem } from '../syntax.js';
+import type { Expression, Item, ParameterItem } from '../syntax.js';
 import type { BlockScope } from './blockScope.js';
 import type { ModuleBody } from './body.js';
-import { converted, evaluateRange, type Range } from './constants.js';
+import { converted, evaluateRange, numberOf, type Range } from './constants.js';
 import type { Overrides } from './overrides.js';
 import { NO_VALUE, REAL_VALUE, SymbolKind } from './symbols.js';
 
@@ -23,9 +23,10 @@ export function bindParameters(
     for (const { name, value, start, end } of item.values) {
       if (!body.isFree(scope, name, start, end)) continue;
       const override = item.local ? undefined : overrides.values.get(name);
-      // A real parameter only ever times something, which is set aside.
-      const given = isReal(item) ? undefined : (override ?? evaluateConstant(value, scope));
-      const constant = given && typed(given, type);
+      // A real parameter mostly times something, which is set aside, so that it need have no value.
+      const isNeeded = !isReal(item) || isKnown(value, scope);
+      const given = override ?? (isNeeded ? evaluateConstant(value, scope) : undefined);
+      const constant = given && (isReal(item) ? realOf(given) : typed(given, type));
       const none = isReal(item) ? REAL_VALUE : NO_VALUE;
       const index = constant === undefined ? none : scope.constants.push(constant) - 1;
       const { msb, lsb } = type?.range ?? { msb: (constant?.width ?? 1) - 1, lsb: 0 };
@@ -53,6 +54,24 @@ function typed(constant: Constant, type: ParameterType | undefined): Constant {
   const { range, signed } = type;
   const width = range === undefined ? constant.width : Math.abs(range.msb - range.lsb) + 1;
   return converted(constant, width, signed);
+}
+
+function realOf(constant: Constant): Constant {
+  return { ...constant, real: constant.real ?? numberOf(constant) ?? Number.NaN };
+}
+
+/** Whether all names in the value of a parameter have a meaning. */
+function isKnown(value: Expression, scope: BlockScope): boolean {
+  let isKnownSoFar = true;
+  walk(value, (node) => {
+    const part = node as Expression;
+    if (part.kind === 'call') isKnownSoFar &&= isRealFunction(part, scope);
+    if (part.kind !== 'name') return isKnownSoFar;
+    const { path } = part;
+    isKnownSoFar &&= scope.realOf(path[0]!) !== undefined || scope.resolve(path) !== undefined;
+    return false;
+  });
+  return isKnownSoFar;
 }
 
 const isReal = (item: ParameterItem): boolean => item.type === 'real' || item.type === 'realtime';

@@ -208,9 +208,9 @@ function overridesOf(
       failed = true;
       continue;
     }
-    const constant = value.kind === 'real' ? undefined : evaluateConstant(value, scope);
+    const constant = evaluateConstant(value, scope);
     if (constant !== undefined) values.set(parameter, constant);
-    else failed ||= value.kind !== 'real';
+    else failed = true;
   }
   for (const [name, value] of defparams?.values ?? []) {
     if (known.includes(name)) values.set(name, value);

@@ -179,6 +179,32 @@ describe('constant expressions', () => {
     expect(constantOf('-2.5').constant?.value).toBe(0xfffffffdn);
   });
 
+  it.each([
+    ['1.5 + 1', 2.5],
+    ['1 / 2 * 5.0', 0],
+    ['1.0 / 2 * 5', 2.5],
+    ['-(2 ** 0.5) ** 2 + 1', 3],
+    ["4'sb1111 * 1.5", -1.5],
+    ['1 > 2 ? 3 : 4.5', 4.5],
+    ['1.5 ? 3 : 4.5', 3],
+    ['$itor(7) / 2', 3.5],
+    ['$ceil($ln(1000) / $ln(2))', 10],
+    ['$pow(2, 3) + $sqrt(2.25) + $floor(-0.5)', 8.5],
+  ])('work %s out in real numbers', (text, value) => {
+    expect(constantOf(text).constant?.real).toBeCloseTo(value, 12);
+  });
+
+  it.each([
+    ['$rtoi(50.0e6 / 115200 + 0.5)', 434n],
+    ['$rtoi(-1.9)', 0xffffffffn],
+    ['1.5 > 1 && 0.1', 1n],
+    ['!0.5', 0n],
+    ['0.5 == 1 / 2', 0n],
+  ])('make a whole number of real ones by %s', (text, value) => {
+    const { constant } = constantOf(text);
+    expect([constant?.value, constant?.real]).toEqual([value, undefined]);
+  });
+
   const refusals: readonly (readonly [text: string, code: string, at: string, items: string])[] = [
     ['a + 1', 'constant-required', 'a', 'wire [3:0] a;'],
     ['none', 'name-undeclared', 'none', ''],
@@ -188,7 +214,7 @@ describe('constant expressions', () => {
     ["{70000{1'b1}}", 'range-invalid', "{70000{1'b1}}", ''],
     ['$random', 'not-supported', '$random', ''],
     ['$clog2(1, 2)', 'argument-count', '$clog2(1, 2)', ''],
-    ['1.5 + 1', 'not-supported', '1.5', ''],
+    ['1.5 % 1', 'not-supported', '1.5', ''],
     ['f(1, 2)', 'argument-count', 'f(1, 2)', 'function f(input a); f = a; endfunction'],
     ['f(1)', 'loop-unbounded', 'f(a)', 'function f(input a); f = f(a); endfunction'],
     ['f', 'range-invalid', 'f', 'function f(input a); f = a; endfunction'],

@@ -53,6 +53,26 @@ describe('parameters', () => {
     expect(signalValue(circuit, 'z', {})).toBe(14);
   });
 
+  it('may be real numbers, which stay so until a whole number is declared', () => {
+    const circuit = circuitOf(`
+      module m #(parameter real R = 1.0, parameter Q = 2) (output [7:0] y);
+        localparam integer K = R * 10 + Q;
+        assign y = K;
+      endmodule
+      module t (output [7:0] a, b, c, d, e);
+        parameter F = 2.5;
+        localparam [7:0] G = F * 3;
+        m u0 (a);
+        m #(F) u1 (b);
+        m #(.R(3), .Q(F * 2)) u2 (c);
+        m u3 (d);
+        defparam u3.R = 0.25;
+        assign e = G;
+      endmodule`);
+    const values = ['a', 'b', 'c', 'd', 'e'].map((name) => signalValue(circuit, name, {}));
+    expect(values).toEqual([12, 27, 35, 5, 8]);
+  });
+
   it('convert a value to the type that they declare', () => {
     const circuit = circuitOf(`module t (output [7:0] y, z, w);
       parameter [3:0] CUT = 8'hab;
