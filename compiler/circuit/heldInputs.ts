@@ -3,6 +3,7 @@ import { Priority } from './circuit.js';
 import { GateKind, gateInfo } from './gates.js';
 import { GrowableUint32 } from './growable.js';
 import { NO_NET } from './ids.js';
+import { Lists } from './lists.js';
 import { gateReaders, type Readers } from './readers.js';
 import { X } from './values.js';
 
@@ -191,15 +192,12 @@ function elementReaders({ netCount, registers, latches }: Circuit): Readers {
       (nets) => [registers.count, nets] as const,
     ),
   ];
-  const start = new Uint32Array(netCount + 1);
-  for (const [, nets] of pins) for (const net of nets) if (net !== NO_NET) start[net + 1]!++;
-  for (let net = 0; net < netCount; net++) start[net + 1]! += start[net]!;
-  const reader = new Uint32Array(start[netCount]!);
-  const next = start.slice(0, netCount);
-  for (const [first, nets] of pins) {
-    nets.forEach((net, i) => {
-      if (net !== NO_NET) reader[next[net]!++] = first + i;
-    });
-  }
+  const { start, members: reader } = new Lists(netCount, (add) => {
+    for (const [first, nets] of pins) {
+      nets.forEach((net, i) => {
+        if (net !== NO_NET) add(net, first + i);
+      });
+    }
+  });
   return { start, reader };
 }

@@ -1,5 +1,6 @@
 import type { Circuit } from './circuit.js';
 import { NO_NET } from './ids.js';
+import { Lists } from './lists.js';
 import { loopsOf, SettlingSources } from './loops.js';
 
 /** Registers that set or reset themselves, and all that the pulses of these reach. */
@@ -44,34 +45,24 @@ function findPulses(circuit: Circuit): Pulses {
 
 /** Marks what follows from some nets while the logic settles. */
 function reachedFrom(circuit: Circuit, nets: readonly number[]): Uint8Array {
-  const { start, reader } = settlingReaders(circuit);
+  const readers = settlingReaders(circuit);
   const reached = new Uint8Array(circuit.netCount);
   const pending = [...nets];
   for (let net = pending.pop(); net !== undefined; net = pending.pop()) {
     if (reached[net] === 1) continue;
     reached[net] = 1;
-    for (let i = start[net]!; i < start[net + 1]!; i++) pending.push(reader[i]!);
+    for (const reader of readers.of(net)) pending.push(reader);
   }
   return reached;
 }
 
-function settlingReaders(circuit: Circuit): { start: Uint32Array; reader: Uint32Array } {
-  const { netCount } = circuit;
+function settlingReaders(circuit: Circuit): Lists {
   const sources = new SettlingSources(circuit);
-  const start = new Uint32Array(netCount + 1);
-  const each = (visit: (source: number, net: number) => void): void => {
-    for (let net = 0; net < netCount; net++) {
+  return new Lists(circuit.netCount, (add) => {
+    for (let net = 0; net < circuit.netCount; net++) {
       for (let i = 0, source = sources.at(net, 0); source !== -1; source = sources.at(net, ++i)) {
-        visit(source, net);
+        add(source, net);
       }
     }
-  };
-  each((source) => start[source + 1]!++);
-  for (let net = 0; net < netCount; net++) start[net + 1]! += start[net]!;
-  const reader = new Uint32Array(start[netCount]!);
-  const next = start.slice(0, netCount);
-  each((source, net) => {
-    reader[next[source]!++] = net;
   });
-  return { start, reader };
 }

@@ -2,6 +2,7 @@ import type binaryen from 'binaryen';
 import type { MemoryPlaces } from '../program/memoryPlaces.js';
 import {
   FIRST_INPUT,
+  firstLane,
   firstResult,
   firstState,
   isWide,
@@ -68,7 +69,7 @@ export class BlockEmitter {
   readonly statements: binaryen.ExpressionRef[] = [];
   readonly #emission: Emission;
   readonly #pointers: Pointers;
-  readonly #rowInputs: number;
+  readonly #firstLane: number;
   readonly #firstState: number;
   readonly #firstResult: number;
   readonly #start: number;
@@ -88,7 +89,7 @@ export class BlockEmitter {
     this.#pointers = pointers;
     this.#localCount = firstLocal;
     const { program } = emission;
-    this.#rowInputs = program.vectors?.rowInputs ?? program.inputCount;
+    this.#firstLane = firstLane(program);
     this.#firstState = firstState(program);
     this.#firstResult = firstResult(program);
     this.#start = program.blockStart[block]!;
@@ -286,7 +287,7 @@ export class BlockEmitter {
     const { i32, local } = this.#emission.module;
     if (value < FIRST_INPUT) return i32.const(-value);
     if (value < this.#firstState) {
-      const lane = value - FIRST_INPUT - this.#rowInputs;
+      const lane = value - this.#firstLane;
       if (lane < 0) return this.#loadInput(value - FIRST_INPUT);
       const pointer = local.get(this.#pointers.next, this.#emission.i32);
       return i32.load8_u(this.#emission.area.slots + lane, 1, pointer, '0');

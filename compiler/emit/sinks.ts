@@ -1,5 +1,5 @@
 import { UPDATE_WIDTH } from '../logic/logic.js';
-import { FIRST_INPUT, firstResult, firstState, type Program } from '../program/program.js';
+import { firstLane, firstResult, firstState, type Program } from '../program/program.js';
 import type { AreaLayout } from './areaLayout.js';
 import { LANES } from './lanes.js';
 
@@ -29,8 +29,8 @@ export function storesOf(
   const ofOperation: number[][] = new Array(program.op.length);
   const copies: Copy[] = [];
   const laneCopies: Copy[] = [];
-  const firstLane = FIRST_INPUT + (program.vectors?.rowInputs ?? program.inputCount);
-  const isLane = (value: number): boolean => value >= firstLane && value < firstState(program);
+  const isLane = (value: number): boolean =>
+    value >= firstLane(program) && value < firstState(program);
   const addTo = (operation: number, offset: number): void => {
     const known = ofOperation[operation];
     if (known === undefined) ofOperation[operation] = [offset];

@@ -1,3 +1,4 @@
+import { Lists } from '../circuit/lists.js';
 import { type Literal, type Logic, LogicOp } from '../logic/logic.js';
 import { sinksOf } from '../logic/sinks.js';
 import { BucketQueue } from './bucketQueue.js';
@@ -75,7 +76,7 @@ class Cones {
         if (this.#computed[node]) continue;
         this.#computed[node] = 1;
         for (let u = users.start[node]!; u < users.start[node + 1]!; u++) {
-          queue.decrease(users.sink[u]!);
+          queue.decrease(users.members[u]!);
         }
       }
     }
@@ -84,19 +85,13 @@ class Cones {
   }
 
   // For each node, the sinks of the group whose cones hold it.
-  #usersByNode(): { start: Uint32Array; sink: Uint32Array } {
-    const start = new Uint32Array(this.#logic.nodeCount + 1);
-    for (const node of this.#nodes) start[node + 1]!++;
-    for (let node = 0; node < this.#logic.nodeCount; node++) start[node + 1]! += start[node]!;
-    const filled = start.slice();
-    const sink = new Uint32Array(this.#nodes.length);
-    for (let s = 0; s + 1 < this.#starts.length; s++) {
-      for (let i = this.#starts[s]!; i < this.#starts[s + 1]!; i++) {
-        const node = this.#nodes[i]!;
-        sink[filled[node]!] = s;
-        filled[node]!++;
+  #usersByNode(): Lists {
+    return new Lists(this.#logic.nodeCount, (add) => {
+      for (let sink = 0; sink + 1 < this.#starts.length; sink++) {
+        for (let i = this.#starts[sink]!; i < this.#starts[sink + 1]!; i++) {
+          add(this.#nodes[i]!, sink);
+        }
       }
-    }
-    return { start, sink };
+    });
   }
 }

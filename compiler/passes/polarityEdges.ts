@@ -1,4 +1,6 @@
+import { Lists } from '../circuit/lists.js';
 import { type Literal, type Logic, LogicOp } from '../logic/logic.js';
+import { stateNodes } from '../logic/stateNodes.js';
 import { writeLiterals } from '../logic/writes.js';
 
 /**
@@ -63,11 +65,10 @@ function edgesOf(logic: Logic): { literals: Literal[]; readers: number[] } {
     literals.push(literal);
     readers.push(reader);
   };
-  const stateNode = new Int32Array(logic.states.length);
+  const stateNode = stateNodes(logic);
   for (let node = 1; node < logic.nodeCount; node++) {
     const op = logic.op[node];
-    if (op === LogicOp.State) stateNode[logic.a[node]!] = node;
-    else if (op === LogicOp.Mux) add(logic.c[node]!, node);
+    if (op === LogicOp.Mux) add(logic.c[node]!, node);
     else if (op === LogicOp.Pack) add(logic.a[node]!, node);
     else if (op === LogicOp.Load) add(logic.b[node]!, node);
     else if (op === LogicOp.And) {
@@ -75,7 +76,7 @@ function edgesOf(logic: Logic): { literals: Literal[]; readers: number[] } {
       add(logic.b[node]!, node);
     }
   }
-  for (const [bit, literal] of logic.next.entries()) add(literal, stateNode[bit]!);
+  for (const [bit, literal] of logic.next.entries()) add(literal, Math.max(stateNode[bit]!, 0));
   for (const { enable, gate } of logic.updates) {
     add(enable, 0);
     add(gate, 0);
@@ -92,30 +93,5 @@ function eachFollower(logic: Logic, add: (node: number, follower: number) => voi
     const op = logic.op[node];
     if (op === LogicOp.Xor) add(logic.a[node]! >>> 1, node);
     if (op === LogicOp.Xor || op === LogicOp.Mux) add(logic.b[node]! >>> 1, node);
-  }
-}
-
-/** A list of numbers for each node, all in one array. */
-class Lists {
-  readonly #start: Uint32Array;
-  readonly #members: Uint32Array;
-
-  // Two walks, one to count and one to place, need no list of pairs.
-  constructor(nodes: number, walk: (add: (node: number, member: number) => void) => void) {
-    this.#start = new Uint32Array(nodes + 1);
-    walk((node) => {
-      this.#start[node + 1]!++;
-    });
-    for (let node = 0; node < nodes; node++) this.#start[node + 1]! += this.#start[node]!;
-    this.#members = new Uint32Array(this.#start[nodes]!);
-    const next = this.#start.slice();
-    walk((node, member) => {
-      this.#members[next[node]!] = member;
-      next[node]!++;
-    });
-  }
-
-  of(node: number): Uint32Array {
-    return this.#members.subarray(this.#start[node]!, this.#start[node + 1]!);
   }
 }

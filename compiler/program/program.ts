@@ -74,6 +74,10 @@ export interface Program {
 /** Value number of the first input bit. */
 export const FIRST_INPUT = 2;
 
+/** Value number of the first lane of a vector, behind the bits of the stimulus row. */
+export const firstLane = (program: Program): number =>
+  FIRST_INPUT + (program.vectors?.rowInputs ?? program.inputCount);
+
 /** Value number of the first state bit. */
 export const firstState = (program: Program): number => FIRST_INPUT + program.inputCount;
 

@@ -1,5 +1,11 @@
 import type binaryen from 'binaryen';
-import { FIRST_INPUT, firstResult, firstState, type Program } from '../../program/program.js';
+import {
+  FIRST_INPUT,
+  firstLane,
+  firstResult,
+  firstState,
+  type Program,
+} from '../../program/program.js';
 
 type Code = binaryen.ExpressionRef;
 
@@ -34,11 +40,11 @@ export function numberCode(
   bits: readonly number[],
   parts: NumberParts,
 ): Code {
-  const rowInputs = program.vectors?.rowInputs ?? program.inputCount;
+  const rowEnd = firstLane(program);
   const codes = runsOf(program, bits).map(({ at, count, first }) => {
     let code: Code;
     if (count === 1) code = i32.and(parts.bit(bits[at]!), i32.const(1));
-    else if (first < FIRST_INPUT + rowInputs) {
+    else if (first < rowEnd) {
       const bit = first - FIRST_INPUT;
       const word = parts.rowWord(bit >>> 5);
       const moved = (bit & 31) === 0 ? word : i32.shr_u(word, i32.const(bit & 31));
@@ -82,7 +88,7 @@ function runsOf(program: Program, bits: readonly number[]): Run[] {
 }
 
 function lengthOf(program: Program, first: number, count: number): number {
-  const rowEnd = FIRST_INPUT + (program.vectors?.rowInputs ?? program.inputCount);
+  const rowEnd = firstLane(program);
   if (first >= FIRST_INPUT && first < rowEnd) {
     // Those in one word of the row.
     return Math.min(count, rowEnd - first, 32 - ((first - FIRST_INPUT) & 31));

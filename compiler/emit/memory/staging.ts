@@ -1,4 +1,10 @@
-import { FIRST_INPUT, firstResult, firstState, type Program } from '../../program/program.js';
+import {
+  FIRST_INPUT,
+  firstLane,
+  firstResult,
+  firstState,
+  type Program,
+} from '../../program/program.js';
 
 /** Bits that a write takes: constants, or bits that stand side by side. */
 export interface StagedBits {
@@ -79,7 +85,7 @@ function homeOf(
   const [first] = values;
   if (first === undefined || !values.every((value, i) => value === first + i)) return undefined;
   const last = first + values.length - 1;
-  const lanes = FIRST_INPUT + (program.vectors?.rowInputs ?? program.inputCount);
+  const lanes = firstLane(program);
   const states = firstState(program);
   if (first >= FIRST_INPUT && last < lanes)
     return { values, home: 'row', first: first - FIRST_INPUT };

@@ -1,7 +1,8 @@
+import type { Lists } from '../../circuit/lists.js';
 import { type Logic, LogicOp } from '../../logic/logic.js';
 import { sinksOf } from '../../logic/sinks.js';
 import { orderSinks } from '../orderSinks.js';
-import { eachOperand, Users } from './users.js';
+import { eachOperand, usersOf } from './users.js';
 
 /** Touches after which a value counts as gone from the registers and from what is kept. */
 const RECENT = 100;
@@ -40,7 +41,7 @@ export function orderLaneNodes(logic: Logic): Uint32Array {
 class Ordering {
   readonly order: number[] = [];
   readonly #logic: Logic;
-  readonly #users: Users;
+  readonly #users: Lists;
   readonly #needs: Float64Array;
   /** Per node what it counts for as a goal, negative if it is none. */
   readonly #goal: Int8Array;
@@ -62,7 +63,7 @@ class Ordering {
   constructor(logic: Logic) {
     const { nodeCount } = logic;
     this.#logic = logic;
-    this.#users = new Users(logic);
+    this.#users = usersOf(logic);
     this.#needs = registerNeeds(logic);
     this.#goal = Int8Array.from({ length: nodeCount }, (_, node) =>
       this.#users.start[node + 1]! - this.#users.start[node]! > 1 ? KEPT : -1,
@@ -138,7 +139,7 @@ class Ordering {
       if (end - start > MOST_USERS) continue;
       left -= end - start;
       for (let i = start; i < end; i++) {
-        const user = this.#users.user[i]!;
+        const user = this.#users.members[i]!;
         if (this.#isDone[user] === 1) continue;
         stack.push(user);
         if (this.#goal[user]! < 0 || this.#isCandidate[user] === 1) continue;

@@ -1,4 +1,5 @@
 import { type Literal, type Logic, LogicOp, nodeOf } from '../../logic/logic.js';
+import { stateNodes } from '../../logic/stateNodes.js';
 import type { Addition } from '../additions/addition.js';
 import { alignedOperands } from './alignment.js';
 import { islandsOf } from './islands.js';
@@ -66,10 +67,7 @@ class Grower {
     this.#logic = logic;
     this.#shapes = shapesOf(logic);
     this.#heights = heightsOf(logic);
-    this.#stateNode = new Int32Array(logic.states.length).fill(-1);
-    for (let node = 1; node < logic.nodeCount; node++) {
-      if (logic.op[node] === LogicOp.State) this.#stateNode[logic.a[node]!] = node;
-    }
+    this.#stateNode = stateNodes(logic);
     for (const [bit, literal] of logic.next.entries()) {
       const source = nodeOf(literal);
       const node = this.#stateNode[bit]!;

@@ -155,7 +155,7 @@ class Packing {
 
   // Packs whose lanes are read one by one keep them in slots.
   #slots(): VectorSink[] {
-    const { start, reader } = readersOf(this.#packs);
+    const readers = readersOf(this.#packs);
     const { nodeCount, states } = this.#logic;
     const packedState = this.#packedStates();
     const isSingle = (by: number): boolean =>
@@ -169,9 +169,7 @@ class Packing {
     for (const number of this.#stages.packOrder) {
       const pack = this.#packs.get(number)!;
       if (pack.op === LogicOp.State) continue;
-      const isRead = pack.nodes.some(
-        (node) => node >= 0 && reader.subarray(start[node]!, start[node + 1]!).some(isSingle),
-      );
+      const isRead = pack.nodes.some((node) => node >= 0 && readers.of(node).some(isSingle));
       if (!isRead) continue;
       // Packs whose lanes are different ones of one vector have one slot.
       const { step } = this.#plan.ofPack(number);

@@ -1,7 +1,9 @@
+import type { Lists } from '../../circuit/lists.js';
 import { LogicOp, nodeOf } from '../../logic/logic.js';
+import { stateNodes } from '../../logic/stateNodes.js';
 import { Cost } from './cost.js';
 import { isOneNode, lanesOf, NO_NODE, type Pack, type Packs, type Tuple } from './packs.js';
-import { type Readers, readersOf } from './readers.js';
+import { readersOf } from './readers.js';
 import { SumPrices } from './sumPrices.js';
 
 /** The part of a graph's cost that its packs save. */
@@ -10,7 +12,7 @@ export const savedPart = (packs: Packs): number => new Prices(packs).saved();
 /** What the packs of a graph cost and save. */
 export class Prices {
   readonly #packs: Packs;
-  readonly #readers: Readers;
+  readonly #readers: Lists;
   /** Per state bit its node, or -1. */
   readonly #stateNode: Int32Array;
   readonly #sums: SumPrices;
@@ -19,11 +21,7 @@ export class Prices {
     this.#packs = packs;
     this.#readers = readersOf(packs);
     this.#sums = new SumPrices(packs, this.#readers, (node) => this.#bitCost(node));
-    const { logic } = packs;
-    this.#stateNode = new Int32Array(logic.states.length).fill(-1);
-    for (let node = 1; node < logic.nodeCount; node++) {
-      if (logic.op[node] === LogicOp.State) this.#stateNode[logic.a[node]!] = node;
-    }
+    this.#stateNode = stateNodes(packs.logic);
   }
 
   /** The part of the graph's cost that its packs save. */
@@ -141,12 +139,12 @@ export class Prices {
   }
 
   #readsOf(node: number): { single: boolean; packed: boolean } {
-    const { start, reader } = this.#readers;
+    const { start, members } = this.#readers;
     const { nodeCount } = this.#packs.logic;
     let single = false;
     let packed = false;
     for (let i = start[node]!; i < start[node + 1]!; i++) {
-      const by = reader[i]!;
+      const by = members[i]!;
       const place = by < nodeCount ? by : (this.#stateNode[by - nodeCount] ?? -1);
       // Outputs are packed always.
       if (by === nodeCount + this.#stateNode.length) packed = true;

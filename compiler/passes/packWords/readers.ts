@@ -1,34 +1,17 @@
+import { Lists } from '../../circuit/lists.js';
 import { LogicOp, nodeOf } from '../../logic/logic.js';
 import { writeLiterals } from '../../logic/writes.js';
 import { type Packs, SUM } from './packs.js';
 
-/** Who reads each node of a graph: other nodes, the next state of bits, and outputs. */
-export interface Readers {
-  /** Readers of node n stand from `start[n]` up to `start[n + 1]`. */
-  readonly start: Uint32Array;
-  /**
-   * A node that reads it; or `nodeCount` + a state bit whose next value it is; or `nodeCount` + the
-   * number of state bits for an output, a fault or a write.
-   */
-  readonly reader: Uint32Array;
-}
-
 /**
- * Lists the readers of all nodes. What is added is read by the lowest bit of the sum, and by no node
- * that an addition makes superfluous.
+ * Lists the readers of all nodes: a node that reads it; or `nodeCount` + a state bit whose next value
+ * it is; or `nodeCount` + the number of state bits for an output, a fault or a write.
+ *
+ * What is added is read by the lowest bit of the sum, and by no node that an addition makes
+ * superfluous.
  */
-export function readersOf(packs: Packs): Readers {
-  const { logic } = packs;
-  const start = new Uint32Array(logic.nodeCount + 1);
-  eachRead(packs, (node) => start[node + 1]!++);
-  for (let node = 0; node < logic.nodeCount; node++) start[node + 1]! += start[node]!;
-  const reader = new Uint32Array(start[logic.nodeCount]!);
-  const next = start.slice();
-  eachRead(packs, (node, by) => {
-    reader[next[node]!++] = by;
-  });
-  return { start, reader };
-}
+export const readersOf = (packs: Packs): Lists =>
+  new Lists(packs.logic.nodeCount, (read) => eachRead(packs, read));
 
 function eachRead(packs: Packs, read: (node: number, reader: number) => void): void {
   const { logic, isDead } = packs;

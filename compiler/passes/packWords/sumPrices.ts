@@ -1,18 +1,18 @@
+import type { Lists } from '../../circuit/lists.js';
 import { FALSE, isInverted, LogicOp } from '../../logic/logic.js';
 import type { Addition } from '../additions/addition.js';
 import { Cost } from './cost.js';
 import { isFilled, sumOfWord } from './numberPlan.js';
 import { chunksOf, type Pack, type Packs, SUM } from './packs.js';
-import type { Readers } from './readers.js';
 
 /** What additions cost, but for bringing together what they add, and what they spare. */
 export class SumPrices {
   readonly #packs: Packs;
-  readonly #readers: Readers;
+  readonly #readers: Lists;
   /** Per addition, the cost of the nodes that nothing needs if it stands. */
   readonly #spared: readonly number[];
 
-  constructor(packs: Packs, readers: Readers, bitCost: (node: number) => number) {
+  constructor(packs: Packs, readers: Lists, bitCost: (node: number) => number) {
     this.#packs = packs;
     this.#readers = readers;
     const isCounted = packs.isDead.slice();
@@ -66,14 +66,12 @@ export class SumPrices {
 
   // Whether anything but other sums reads its bits.
   #isSpread(number: number): boolean {
-    const { start, reader } = this.#readers;
     const { logic, packOf } = this.#packs;
     return this.#packs.get(number)!.nodes.some((node) => {
       if (node < 0) return false;
-      const readers = reader.subarray(start[node]!, start[node + 1]!);
-      return readers.some(
-        (by) => by >= logic.nodeCount || this.#packs.get(packOf[by]!)?.op !== SUM,
-      );
+      const isOther = (by: number): boolean =>
+        by >= logic.nodeCount || this.#packs.get(packOf[by]!)?.op !== SUM;
+      return this.#readers.of(node).some(isOther);
     });
   }
 }
