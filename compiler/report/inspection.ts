@@ -9,6 +9,7 @@ import type { Diagnostic } from '../diagnostics/diagnostics.js';
 import { type ClockSummary, clockSummaries } from './inspect/clockSummary.js';
 import { type Fanout, largestFanouts } from './inspect/fanoutSummary.js';
 import { loopSummaries } from './inspect/loopSummary.js';
+import { type MachineSummary, machineSummaries } from './inspect/machineSummary.js';
 import { type MemorySummary, memorySummaries } from './inspect/memorySummary.js';
 import { NetWords } from './inspect/netWords.js';
 import { deepestSteps, type PathStep } from './inspect/pathSummary.js';
@@ -44,6 +45,8 @@ export interface Inspection {
   /** Words that are held as a memory; small memories are among the registers. */
   readonly memories: readonly MemorySummary[];
   readonly state: StateSummary;
+  /** Registers whose values have names. */
+  readonly machines: readonly MachineSummary[];
   /** Combinational loops, those through open latches included. */
   readonly loops: number;
   /** Of the first hundred loops, the nets of a shortest way round. */
@@ -84,6 +87,7 @@ export function inspect(design: Design, found: readonly Diagnostic[]): Inspectio
     latches: circuit.latches.count,
     memories: memorySummaries(design, roots),
     state: stateSummary(circuit),
+    machines: machineSummaries(circuit),
     loops: loopsOf(circuit).nets.length,
     loopNets: loopSummaries(circuit, MOST_LOOPS).map(({ path }) =>
       path.map((net) => words.name(net)),

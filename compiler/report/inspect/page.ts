@@ -1,6 +1,7 @@
 import { counted, figure } from '../figures.js';
 import type { Inspection, Problem } from '../inspection.js';
 import type { ClockSummary } from './clockSummary.js';
+import type { MachineSummary } from './machineSummary.js';
 import type { MemorySummary } from './memorySummary.js';
 import type { PathStep } from './pathSummary.js';
 import { textPlot } from './textPlot.js';
@@ -15,6 +16,8 @@ const MOST_PORTS = 12;
 const MOST_CLOCKS = 12;
 const MOST_KINDS = 12;
 const MOST_MEMORIES = 12;
+const MOST_MACHINES = 12;
+const MOST_STATES = 12;
 const MOST_STEPS = 16;
 const MOST_PROBLEMS = 50;
 
@@ -31,6 +34,7 @@ export function inspectionPage(inspection: Inspection, paint: Paint = (text) => 
     ['latches', [figure(latches)]],
     ...memoryRows(inspection),
     ['state', stateWords(inspection)],
+    ...machineRows(inspection),
     ['loops', [figure(loops)]],
     ['depth', [`${counted(depth, 'level')} of gates`]],
     ...pathRows(inspection.deepestPath),
@@ -126,6 +130,19 @@ function memoryText({ name, words, width, readPorts, writePorts, clocks }: Memor
   const on = clocks.length > 0 ? ` on ${clocks.join(' and ')}` : '';
   const writes = `${counted(writePorts, 'write port')}${on}`;
   return `${name} (${shape}; ${counted(readPorts, 'read port')}, ${writes})`;
+}
+
+function machineRows({ machines }: Inspection): [string, string[]][] {
+  const lines = shortened(machines.map(machineText), MOST_MACHINES);
+  return lines.map((line, i): [string, string[]] => [i === 0 ? 'machines' : '', line.split(' ')]);
+}
+
+function machineText({ name, states }: MachineSummary): string {
+  const names = shortened(
+    states.map((state) => state.name),
+    MOST_STATES,
+  );
+  return `${name} (${counted(states.length, 'named state')}: ${enumerated(names).join(' ')})`;
 }
 
 function stateWords({ state, registers, latches }: Inspection): string[] {

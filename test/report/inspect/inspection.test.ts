@@ -1,6 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { designOf } from '../../../compiler/compile.js';
+import { inspectionPage } from '../../../compiler/report/inspect/page.js';
 import { inspect } from '../../../compiler/report/inspection.js';
 import { randomCircuit } from '../../support/randomCircuit.js';
 import { inspectNetlist, inspectSmall } from './reading.js';
@@ -25,7 +26,38 @@ module top (input clk, en, d, output [5:0] q);
   flop f4 (q[0], ~q[4], q[4]), f5 (q[4], ~q[5], q[5]);
 endmodule`;
 
+const gates = `
+module gate (input clk, rst, go, output open, output [1:0] now);
+  localparam SHUT = 0, RISING = 1, UP = 2, OFF = 1'b0, ON = 1'b1;
+  reg [1:0] state;
+  always @(posedge clk) if (rst) state <= SHUT; else case (state)
+    SHUT: if (go) state <= RISING;
+    RISING: state <= UP;
+    default: state <= SHUT;
+  endcase
+  wire lamp;
+  assign lamp = go == ON ? OFF : ON;
+  assign open = state == UP, now = state;
+endmodule
+module top (input clk, rst, a, b, output x, y, output [1:0] z);
+  gate left (clk, rst, a, x,), right (clk, rst, b, y, z);
+endmodule`;
+
 describe('an inspection', () => {
+  it('names the states of machines, on the page too', () => {
+    const inspection = inspectNetlist(gates);
+    const states = ['SHUT', 'RISING', 'UP'].map((name, value) => ({ value, name }));
+    expect(inspection.machines).toEqual([
+      { name: 'left.state', width: 2, states },
+      { name: 'right.state', width: 2, states },
+    ]);
+    expect(inspectionPage(inspection)).toContain(`
+  machines   left.state (3 named states: SHUT, RISING, UP)
+             right.state (3 named states: SHUT, RISING, UP)
+`);
+    expect(inspectNetlist(clocked).machines).toEqual([]);
+  });
+
   it('tells how registers and latches hang on a clock', () => {
     const { clocks, clockEnables } = inspectNetlist(clocked);
     expect(clockEnables).toEqual([]);
