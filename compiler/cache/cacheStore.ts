@@ -1,7 +1,8 @@
 import { createHash, randomBytes } from 'node:crypto';
 import { readFileSync, utimesSync } from 'node:fs';
-import { mkdir, readdir, rename, rm, stat, writeFile } from 'node:fs/promises';
+import { readdir, rename, rm, stat, writeFile } from 'node:fs/promises';
 import { join } from 'node:path';
+import { makeFolder } from '../report/makeFolder.js';
 
 /** Bytes of all entries together. */
 const MOST_BYTES = 512 << 20;
@@ -87,7 +88,7 @@ export class CacheStore {
     this.#waiting = [];
     if (waiting.length === 0) return;
     try {
-      await mkdir(this.#folder, { recursive: true, mode: 0o700 });
+      makeFolder(this.#folder, 0o700);
       for (const write of waiting) await write();
       await this.#makeRoom();
     } catch {

@@ -1,4 +1,4 @@
-import { dirname, resolve } from 'node:path';
+import { resolve } from 'node:path';
 import { Command, Option } from 'commander';
 import { startEmitter } from '../emit/emitter.js';
 import { type EngineName, engineNames } from '../engines.js';
@@ -70,6 +70,9 @@ async function revisit(dir: string, options: RevisitOptions): Promise<void> {
   refuseOutputs(options);
   // Paths are meant where the command was given, not where the run was.
   const here = pathsOf(options);
+  const given = new Map(
+    (['waveform', 'table', 'picture'] as const).map((form) => [here[form], options[form] ?? '']),
+  );
   const { record, files, options: run } = await recordedRun(dir);
   const result = await record.result().catch((error) => refuse(error, dir));
   const shift = shiftOf(dir, window.from, result);
@@ -95,7 +98,8 @@ async function revisit(dir: string, options: RevisitOptions): Promise<void> {
     });
     const isInterrupted = interrupt.signal.aborted && seen.shown <= window.to - window.from;
     const moment = { start: start.cycle + shift, isInterrupted };
-    report(options, seen, { dir, ...moment, waves, circuit: circuit.name });
+    const nameOf = (path: string): string => given.get(path) ?? path;
+    report(options, seen, { dir, ...moment, waves, nameOf, circuit: circuit.name });
   } finally {
     await emitter.close();
   }
@@ -135,6 +139,8 @@ interface Told {
   /** Whether the user has ended it before its last cycle. */
   readonly isInterrupted: boolean;
   readonly waves: readonly ChosenWave[];
+  /** What the user has called a file. */
+  readonly nameOf: (path: string) => string;
 }
 
 function report(options: RevisitOptions, seen: Revisited, told: Told): void {
@@ -149,7 +155,10 @@ function report(options: RevisitOptions, seen: Revisited, told: Told): void {
     return;
   }
   if (options.json) {
-    const waves = told.waves.map(({ path, list }) => ({ file: path, signals: list.count }));
+    const waves = told.waves.map(({ path, list }) => ({
+      file: told.nameOf(path),
+      signals: list.count,
+    }));
     const faults = fault && { fault: { cycle: from + shown, message: fault.message } };
     const { start: checkpoint } = told;
     const interrupted = told.isInterrupted && { interrupted: true };
@@ -160,7 +169,7 @@ function report(options: RevisitOptions, seen: Revisited, told: Told): void {
   }
   const last = figure(from + shown - 1);
   const lines = told.waves.map(
-    ({ path, list }) => `${shownPath(path)}: ${counted(list.count, 'signal')} of ${told.circuit}`,
+    ({ path, list }) => `${told.nameOf(path)}: ${counted(list.count, 'signal')} of ${told.circuit}`,
   );
   lines.push(
     `cycles ${figure(from)} to ${last}, from the checkpoint at cycle ${figure(told.start)} ` +
@@ -172,6 +181,3 @@ function report(options: RevisitOptions, seen: Revisited, told: Told): void {
   else if (from + shown - 1 < options.to) lines.push('the run ends there');
   process.stdout.write(`${lines.join('\n')}\n`);
 }
-
-const shownPath = (path: string): string =>
-  dirname(path) === resolve('.') ? path.slice(dirname(path).length + 1) : path;

@@ -5,11 +5,11 @@ import { join } from 'node:path';
 import { promisify } from 'node:util';
 import type { LaneCount } from '../../runtime/laneLayout.js';
 import type { PackageIdentity } from '../../runtime/model/identity.js';
+import { WholeFile } from '../../runtime/node/wholeFile.js';
 import type { Circuit } from '../circuit/circuit.js';
 import { isGate } from '../circuit/gates.js';
 import type { Design } from '../compile.js';
 import { type Emitter, localEmitter } from '../emit/emitter.js';
-import { writeWhole } from '../report/writeWhole.js';
 import { checkPackage, type PackageCheck } from './check.js';
 import { declarations } from './declarations.js';
 import { packedModule } from './describe.js';
@@ -72,15 +72,24 @@ export async function packDesign(design: Design, request: PackRequest): Promise<
     throw new RangeError(`expected 1 lane for a page, got ${lanes}`);
   }
   const temporary = output === undefined ? mkdtempSync(join(tmpdir(), 'clockstride-')) : undefined;
-  const folder = PackageFolder.begin(output ?? join(temporary!, 'package'));
+  let folder: PackageFolder | undefined;
+  let file: WholeFile | undefined;
   try {
+    folder = PackageFolder.begin(output ?? join(temporary!, 'package'));
     const { summary, pageOf } = await fill(folder, design, request);
-    const text = page === undefined ? undefined : pageOf();
-    if (output !== undefined) folder.finish();
-    if (text !== undefined) writeWhole(page!, text);
+    if (page !== undefined) {
+      const text = pageOf();
+      file = new WholeFile(page);
+      file.put(Buffer.from(text));
+    }
+    if (output === undefined) file?.finish();
+    else folder.finish(() => file?.finish());
     return summary;
+  } catch (error) {
+    file?.discard();
+    throw error;
   } finally {
-    folder.discard();
+    folder?.discard();
     if (temporary !== undefined) rmSync(temporary, { recursive: true });
   }
 }

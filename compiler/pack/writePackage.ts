@@ -1,7 +1,6 @@
 import {
   chmodSync,
   existsSync,
-  mkdirSync,
   mkdtempSync,
   readdirSync,
   readFileSync,
@@ -12,6 +11,7 @@ import {
   writeFileSync,
 } from 'node:fs';
 import { basename, dirname, join, relative, resolve } from 'node:path';
+import { makeFolder, removeFolders } from '../report/makeFolder.js';
 import { isManifest } from './manifest.js';
 
 /** Thrown where a folder cannot take a package; nothing has been changed. */
@@ -22,6 +22,8 @@ export class PackageFolder {
   readonly path: string;
   readonly #target: string;
   readonly #foreign: () => string | undefined;
+  /** Folders that were made for it. */
+  readonly #made: readonly string[];
   readonly #onExit = (): void => this.discard();
 
   /**
@@ -32,12 +34,18 @@ export class PackageFolder {
     const whole = existsSync(target) ? realpathSync(target) : resolve(target);
     const reason = refusal(whole);
     if (reason !== undefined) throw new FolderRefused(`${target} ${reason}`);
-    mkdirSync(dirname(whole), { recursive: true });
-    return new PackageFolder(whole, target);
+    const made = makeFolder(dirname(whole));
+    try {
+      return new PackageFolder(whole, target, made);
+    } catch (error) {
+      removeFolders(made);
+      throw error;
+    }
   }
 
-  private constructor(target: string, name: string) {
+  private constructor(target: string, name: string, made: readonly string[]) {
     this.#target = target;
+    this.#made = made;
     this.#foreign = () => {
       const reason = refusal(target);
       return reason && `${name} ${reason}`;
@@ -57,8 +65,11 @@ export class PackageFolder {
     }
   }
 
-  /** Puts the folder in the place of the target, all at once. */
-  finish(): void {
+  /**
+   * Puts the folder in the place of the target, all at once, and does what belongs to it; where that
+   * throws, what was there before is as it was.
+   */
+  finish(last: () => void = () => {}): void {
     const reason = this.#foreign();
     if (reason !== undefined) throw new FolderRefused(reason);
     const old = `${this.path}-old`;
@@ -70,6 +81,13 @@ export class PackageFolder {
       if (isReplaced) renameSync(old, this.#target);
       throw error;
     }
+    try {
+      last();
+    } catch (error) {
+      renameSync(this.#target, this.path);
+      if (isReplaced) renameSync(old, this.#target);
+      throw error;
+    }
     rmSync(old, { recursive: true, force: true });
   }
 
@@ -77,6 +95,7 @@ export class PackageFolder {
   discard(): void {
     process.off('exit', this.#onExit);
     rmSync(this.path, { recursive: true, force: true });
+    removeFolders(this.#made);
   }
 }
 

@@ -1,4 +1,4 @@
-import { mkdirSync, readFileSync } from 'node:fs';
+import { existsSync, mkdirSync, readFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { describe, expect, it } from 'vitest';
 import { WorkFolder } from '../support/command.js';
@@ -102,6 +102,15 @@ describe('clockstride pack', () => {
       'error: lanes run no memories, and m is one; build it from registers with ' +
         '--memories-from 65537, or leave its module out by --black-box\n',
     ]);
+  });
+
+  it.runIf(existsSync('/dev/full'))('leaves nothing where there is no space', async () => {
+    const before = work.names();
+    const both = ['--output', 'new/deep/gray', '--page', '/dev/full'];
+    const { status, stdout, stderr } = await work.run('pack', 'gray.v', ...both);
+    expect([status, stdout]).toEqual([2, '']);
+    expect(stderr).toBe('error: /dev/full cannot be used: no space is left for it\n');
+    expect(work.names()).toEqual(before);
   });
 
   it('refuses to go without an output or a page', async () => {

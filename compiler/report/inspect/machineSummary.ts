@@ -1,6 +1,6 @@
 import type { Circuit, ValueNames } from '../../circuit/circuit.js';
 import { GateKind } from '../../circuit/gates.js';
-import { signalName, signalsOf } from '../../waveform/signalList.js';
+import { scopePath } from '../../circuit/hierarchy.js';
 
 /** Registers whose values the text gives names: the states of a machine, mostly. */
 export interface MachineSummary {
@@ -41,13 +41,15 @@ function namesOfSignals(circuit: Circuit, named: readonly ValueNames[]): Map<str
   const wanted = new Set(named.map(({ nets }) => nets.join()));
   const firsts = new Set(named.map(({ nets }) => nets[0]!));
   const found = new Map<string, string>();
-  const list = signalsOf(circuit, []);
-  for (let entry = 0; entry < list.count; entry++) {
-    const start = list.place[entry]!;
-    if (!firsts.has(list.nets[start]!)) continue;
-    const key = list.nets.slice(start, start + list.width[entry]!).join();
-    if (wanted.has(key) && !found.has(key)) {
-      found.set(key, signalName(circuit.hierarchy, list, entry));
+  const { scopeNames, scopeModule, scopeStart, modules, netOf } = circuit.hierarchy;
+  for (let scope = 0; scope < scopeNames.length; scope++) {
+    for (const { name, offset, width } of modules[scopeModule[scope]!]!.signals) {
+      const start = scopeStart[scope]! + offset;
+      if (!firsts.has(netOf[start]!)) continue;
+      const key = netOf.slice(start, start + width).join();
+      if (!wanted.has(key) || found.has(key)) continue;
+      const path = scopePath(circuit.hierarchy, scope);
+      found.set(key, path === '' ? name : `${path}.${name}`);
     }
   }
   return found;
