@@ -44,7 +44,10 @@ export const codeTable = {
     'An instance names a module that no file defines.',
     'Add the file, such as a cell library, that defines it.',
   ),
-  'module-redefined': error('Two modules have one name.', 'Leave out one of the files.'),
+  'module-redefined': error(
+    'Two modules that differ have one name.',
+    'Leave out one of the files.',
+  ),
   'module-recursive': error('A module contains itself.', 'Break the recursion.'),
   'top-ambiguous': error('Several modules are instantiated by none.', 'Choose one with --top.'),
   'top-unknown': error('No module has the name given to --top.', 'Name one of those listed.'),

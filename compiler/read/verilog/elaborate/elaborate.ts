@@ -21,6 +21,7 @@ import { Stamper } from './stamp.js';
 import type { Template } from './template.js';
 import { chooseTop } from './top.js';
 import { addTopPorts, assumedSupplies, checkTopPorts } from './topPorts.js';
+import { withoutCopies } from './withoutCopies.js';
 
 /** What `elaborate` may be told. */
 export interface ElaborateOptions {
@@ -86,7 +87,13 @@ function elaborateWith(
     memoriesFrom,
     allowance,
   } = options;
-  const replaced = withReplacements(syntax, cells, replacements, sources, found);
+  const replaced = withReplacements(
+    withoutCopies(syntax, sources),
+    cells,
+    replacements,
+    sources,
+    found,
+  );
   const design = new Design(replaced.syntax, sources, found, makers, {
     ...replaced,
     blackBoxes,

@@ -20,7 +20,9 @@ export function chooseTop(design: Design, wanted: string | undefined): ModuleSyn
   }
   if (wanted !== undefined) return namedTop(design, wanted);
   const { used, parents } = instantiations(design);
-  const unused = design.modules.filter(({ name }) => !used.has(name));
+  // A name that two modules have is reported by itself.
+  const seen = new Set(used);
+  const unused = design.modules.filter(({ name }) => !seen.has(name) && seen.add(name));
   const noBoxes = unused.filter(({ name }) => !design.blackBoxes.has(name));
   const roots = noBoxes.length === 0 ? unused : noBoxes;
   const noCells = roots.filter((module) => !module.isCell);

@@ -63,7 +63,7 @@ describe('modules', () => {
   });
 
   it('with one name are reported', () => {
-    const text = 'module a; endmodule\nmodule a; endmodule';
+    const text = 'module a; endmodule\nmodule a; wire w; endmodule';
     expect(problemsOf(text, 'a')).toEqual(['module-redefined a@2']);
     expect(relatedOf(text)).toEqual(['a@1']);
   });

@@ -28,6 +28,17 @@ module s27 (CK, G0, G1, G17, G2, G3);
 endmodule`;
 
 describe('elaborate', () => {
+  it('takes modules and primitives that several files have in the same words', () => {
+    const cells = `primitive u_inv (y, a); output y; input a; table 0 : 1; 1 : 0; endtable endprimitive
+      module c (input a, output y); u_inv (y, a); endmodule\n`;
+    const top = 'module t (input a, output y); c u (a, y); endmodule\n';
+    expect(reading(cells + top + cells + top).problems).toEqual([]);
+    const other = `\`default_nettype none\n${cells}`;
+    expect(reading(cells + top + other).problems).toEqual(['module-redefined c@6']);
+    const macro = '`define V 0\nmodule c (output y); assign y = `V; endmodule\n';
+    expect(reading(macro + macro).problems).toEqual(['module-redefined c@4']);
+  });
+
   it('flattens s27', () => {
     const circuit = circuitOf(s27);
     expect(circuit.name).toBe('s27');
