@@ -145,8 +145,8 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
   reserveNames(builder, design, top);
   for (const source of design.sources.sources) builder.addSource(source);
   const stamper = new Stamper(builder, design.templates);
-  const boundary = stamper.stamp(top, assumedSupplies(design, top));
-  addTopPorts(builder, design, top, boundary, (net) => stamper.constants.of(net));
+  const boundary = stamper.stamp(top, assumedSupplies(design, module, top));
+  addTopPorts(builder, design, module, top, boundary, (net) => stamper.constants.of(net));
   addBoxPorts(builder, design, stamper.boxes);
   reportLateDrivers(design, builder);
   if (!design.diagnostics.hasErrors) reportBuses(design, resolveBuses(builder));

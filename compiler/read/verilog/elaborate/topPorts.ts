@@ -10,8 +10,7 @@ import { Drive, type Template, type TemplatePort } from './template.js';
 /** Reports what keeps a module from being the top: how it treats the nets of its ports. */
 export function checkTopPorts(design: Design, module: ModuleSyntax, top: Template): void {
   for (const [index, port] of top.ports.entries()) {
-    const { start, end } = module.ports[index] ?? module;
-    const span = declaredAt(design, top, port) ?? design.sources.span(start, end);
+    const span = placeOf(design, module, top, index);
     if (port.name === 0 && port.width > 0) {
       const message = `port ${index + 1} of the top module has no name; give it one: .name(…)`;
       design.diagnostics.add('not-supported', message, span);
@@ -28,9 +27,13 @@ export function checkTopPorts(design: Design, module: ModuleSyntax, top: Templat
  * The inouts of the top module that nothing inside drives and whose names are those of supplies: by
  * their place in the boundary, the level that they are held at.
  */
-export function assumedSupplies(design: Design, top: Template): Map<number, 0 | 1> {
+export function assumedSupplies(
+  design: Design,
+  module: ModuleSyntax,
+  top: Template,
+): Map<number, 0 | 1> {
   const supplies = new Map<number, 0 | 1>();
-  for (const port of top.ports) {
+  for (const [index, port] of top.ports.entries()) {
     if (port.direction !== Flag.Inout || port.width !== 1 || isDrivenInside(top, port)) continue;
     const name = design.text(port.name);
     const level = supplyLevel(name);
@@ -39,7 +42,7 @@ export function assumedSupplies(design: Design, top: Template): Map<number, 0 | 
     const message =
       `inout ${name} of the top module is no input but a supply, held at ${level}, ` +
       'as its name says; declare it as an input where it is one';
-    design.diagnostics.add('supply-assumed', message, declaredAt(design, top, port));
+    design.diagnostics.add('supply-assumed', message, placeOf(design, module, top, index));
   }
   return supplies;
 }
@@ -52,18 +55,19 @@ export function assumedSupplies(design: Design, top: Template): Map<number, 0 | 
 export function addTopPorts(
   builder: CircuitBuilder,
   design: Design,
+  module: ModuleSyntax,
   top: Template,
   boundary: Uint32Array,
   supply: (net: number) => number,
 ): void {
-  const positions = top.ports.map((port) => declaredAt(design, top, port));
+  const positions = top.ports.map((_, index) => placeOf(design, module, top, index));
   for (const [index, port] of top.ports.entries()) {
     const nets: NetId[] = bitsOf(port).map((place) => netId(boundary[place]!));
     if (port.width === 0 || (port.direction !== Flag.Output && nets.every(isSupply))) continue;
     const name = design.text(port.name);
     const range = port.range ?? (port.width > 1 ? { msb: port.width - 1, lsb: 0 } : undefined);
-    const span = positions[index];
-    if (span !== undefined) builder.at(design.sources.sources.indexOf(span.source), span.start);
+    const span = positions[index]!;
+    builder.at(design.sources.sources.indexOf(span.source), span.start);
     if (port.direction !== Flag.Output && isDrivenInside(top, port)) {
       reportDriven(design, port, name, span);
     }
@@ -80,7 +84,7 @@ function reportDriven(
   { diagnostics }: Design,
   { direction }: TemplatePort,
   name: string,
-  span: Span | undefined,
+  span: Span,
 ): void {
   if (direction === Flag.Inout) {
     const message =
@@ -115,11 +119,19 @@ function openOutput(name: string, { width }: TemplatePort, open: number): string
     : `${open} of the ${width} bits of output ${name} of the top module have no driver`;
 }
 
-/** Where the signal of a port is declared, if the port has the signal's name. */
-function declaredAt(design: Design, { scope }: Template, { name }: TemplatePort): Span | undefined {
-  const symbol = scope?.symbols.find(name) ?? -1;
-  if (scope === undefined || symbol < 0) return undefined;
-  return design.sources.span(scope.symbols.start(symbol), scope.symbols.end(symbol));
+/** Where the signal of a port is declared if it has the port's name, else the port in the header. */
+function placeOf(
+  { sources }: Design,
+  module: ModuleSyntax,
+  { scope, ports }: Template,
+  index: number,
+): Span {
+  const symbol = scope?.symbols.find(ports[index]!.name) ?? -1;
+  if (scope !== undefined && symbol >= 0) {
+    return sources.span(scope.symbols.start(symbol), scope.symbols.end(symbol));
+  }
+  const { start, end } = module.ports[index] ?? module;
+  return sources.span(start, end);
 }
 
 /** Two inputs that are one net inside would both drive it. */

@@ -272,6 +272,11 @@ describe('nets', () => {
     expect(problemsOf(t('not (y, a), (y, b);'))).toEqual(['net-multiply-driven (@3']);
   });
 
+  it('of ports with another name than their signal are reported in the header', () => {
+    const text = 'module t (.p(d),\n .q(y)); input d; output y; assign d = y; endmodule';
+    expect(problemsOf(text)).toEqual(['net-undriven .q(y)@2', 'net-multiply-driven .p(d)@1']);
+  });
+
   it('of inout ports that are driven inside the top become outputs', () => {
     const text = 'module t (input a,\n inout y); buf (y, a); endmodule';
     expect(problemsOf(text)).toEqual(['inout-as-output y@2']);
