@@ -3,7 +3,10 @@ import type { Circuit } from '../../compiler/circuit/circuit.js';
 import { powerUpState } from '../../compiler/circuit/powerUp.js';
 import { powerUpMemory } from '../../compiler/circuit/powerUpMemory.js';
 import { designOf } from '../../compiler/compile.js';
+import { Diagnostics } from '../../compiler/diagnostics/diagnostics.js';
+import { Source } from '../../compiler/diagnostics/source.js';
 import { createEngine } from '../../compiler/engines.js';
+import { readNetlist } from '../../compiler/read/readNetlist.js';
 import { netsOf, signalValue } from '../read/verilog/elaborate/reading.js';
 import { randomRows, responseOf } from '../support/responses.js';
 import { circuitOfText, reading } from './circuits.js';
@@ -207,6 +210,34 @@ describe('a memory that another module writes as only registers can be written',
     expect(messages.filter((message) => message.includes('drivers'))).toEqual([
       'top.v:6:7: error: u.v.m has 2 drivers; leave one of them [net-multiply-driven]',
     ]);
+  });
+
+  it('is said to do as a memory where clock edges alone write it', () => {
+    const small = (own: string, far: string): string[] =>
+      reading(`module m4 (input clk, input [1:0] a, input [3:0] d, output [3:0] q);
+          reg [3:0] m [0:3]; ${own} assign q = m[a];
+        endmodule
+        module top (input clk, input [1:0] a, b, input [3:0] d, output [3:0] q);
+          m4 u (clk, a, d, q); ${far}
+        endmodule`).messages.filter((message) => message.includes('drivers'));
+    const edge = 'always @(posedge clk) m[a] <= d;';
+    const cure = 'or let it be a memory of 16 bits, with a port for each: --memories-from 16';
+    const farEdge = 'always @(posedge clk) u.m[b] <= d;';
+    expect(small(edge, farEdge).join()).toContain(`u.m has 2 drivers; leave one of them, ${cure}`);
+    expect(small(`${edge} always @(negedge clk) m[d] <= a;`, '')).toHaveLength(1);
+    expect(small(`${edge} always @(negedge clk) m[d] <= a;`, '').join()).toContain(cure);
+    for (const level of ['always @* if (clk) m[d] = a;', edge.replace('posedge', '')]) {
+      expect(small(`${edge} ${level}`, '').join()).toContain(
+        'm has 2 drivers; leave one of them [',
+      );
+    }
+    const diagnostics = new Diagnostics();
+    const text = `module top (input clk, input [1:0] a, b, input [3:0] d, output [3:0] q);
+      reg [3:0] m [0:3]; always @(posedge clk) m[a] <= d;
+      always @(negedge clk) m[b] <= ~d; assign q = m[a]; endmodule`;
+    const circuit = readNetlist([new Source('top.v', text)], { memoriesFrom: 16 }, diagnostics);
+    expect(diagnostics.list).toEqual([]);
+    expect(circuit!.memories[0]!.writes).toHaveLength(2);
   });
 
   it('is refused where it is too large for these', () => {

@@ -1,3 +1,4 @@
+import { GateKind } from '../../../circuit/gates.js';
 import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
 import type { Span } from '../../../diagnostics/source.js';
 import type { NameId } from '../../names.js';
@@ -6,8 +7,8 @@ import type { BlockScope } from './blockScope.js';
 import type { ModuleBody } from './body.js';
 import { isWired, type NetClasses } from './defaults.js';
 import { wordSpan } from './messages.js';
-import { BUS_PART, DROPPED, type Origin } from './recording.js';
-import { NetClass } from './symbols.js';
+import { BUS_PART, DROPPED, type Origin, Pin } from './recording.js';
+import { Flag, NetClass, SymbolKind } from './symbols.js';
 import { Drive, type Template } from './template.js';
 import type { Usage } from './usage.js';
 
@@ -80,6 +81,10 @@ function collectDrivers(
 function reportConflicts(body: ModuleBody, conflicts: Map<number, Origin[]>): void {
   for (const block of body.blocks) {
     for (let symbol = 0; symbol < block.symbols.count; symbol++) {
+      if (isArray(block, symbol)) {
+        reportArray(body, block, symbol, conflicts);
+        continue;
+      }
       for (const vector of block.vectors(symbol)) {
         reportVector(body, block, symbol, vector, conflicts);
       }
@@ -91,15 +96,22 @@ function reportConflicts(body: ModuleBody, conflicts: Map<number, Origin[]>): vo
     const far = farSignal(body, netId(net));
     if (far !== undefined && said.has(far.key)) continue;
     if (far !== undefined) said.add(far.key);
-    report(body, far?.path ?? 'a net without a name', drivers);
+    const isMemory = far && isArray(far.block, far.symbol) && areClocked(body, new Set([net]));
+    const cure = isMemory ? wayOut(body, far.block, far.symbol) : leave;
+    report(body, far?.path ?? 'a net without a name', drivers, cure);
   }
 }
 
-/** The signal or array of an instance that a net stands for; `key` tells it from all others. */
-function farSignal(
-  { blocks, children, design }: ModuleBody,
-  net: NetId,
-): { readonly key: string; readonly path: string } | undefined {
+interface FarSignal {
+  /** Tells it from all others. */
+  readonly key: string;
+  readonly path: string;
+  readonly block: BlockScope;
+  readonly symbol: number;
+}
+
+/** The signal or array of an instance that a net stands for. */
+function farSignal({ blocks, children, design }: ModuleBody, net: NetId): FarSignal | undefined {
   const path: NameId[] = [];
   const key: number[] = [];
   let around: readonly BlockScope[] = blocks;
@@ -113,7 +125,12 @@ function farSignal(
       const { block, symbol } = found;
       path.push(...blockPath(block), block.symbols.name(symbol));
       const texts = path.map((name) => design.text(name));
-      return { key: [...key, block.index, symbol].join(), path: texts.join('.') };
+      return {
+        key: [...key, block.index, symbol].join(),
+        path: texts.join('.'),
+        block,
+        symbol,
+      };
     }
     around = template.scope?.shared.blocks ?? [];
     within = template.children;
@@ -168,12 +185,70 @@ function reportVector(
   report(body, width === 1 ? name : `${name}${bitList(symbols, symbol, bits)}`, drivers);
 }
 
-function report(body: ModuleBody, what: string, drivers: readonly Origin[]): void {
+const isArray = ({ symbols }: BlockScope, symbol: number): boolean =>
+  symbols.kind(symbol) === SymbolKind.Memory && (symbols.flags(symbol) & Flag.Variable) !== 0;
+
+/** One message for all words of an array that is built from registers. */
+function reportArray(
+  body: ModuleBody,
+  block: BlockScope,
+  symbol: number,
+  conflicts: Map<number, Origin[]>,
+): void {
+  const nets: NetId[] = [];
+  let drivers: Origin[] | undefined;
+  for (const { first } of block.vectors(symbol)) {
+    for (let bit = 0; bit < block.symbols.width(symbol); bit++) {
+      const net = body.builder.find(netId(first + bit));
+      const found = conflicts.get(net);
+      if (found === undefined) continue;
+      conflicts.delete(net);
+      drivers ??= found;
+      nets.push(net);
+    }
+  }
+  if (drivers === undefined) return;
+  const cure = areClocked(body, new Set(nets)) ? wayOut(body, block, symbol) : leave;
+  report(body, body.text(block.symbols.name(symbol)), drivers, cure);
+}
+
+/** Whether nothing but clock edges gives certain nets values, as far as this module does. */
+function areClocked({ builder }: ModuleBody, nets: ReadonlySet<number>): boolean {
+  for (let driver = 0; driver < builder.driverCount; driver++) {
+    const kind = builder.driverKind(driver);
+    if (kind === DROPPED || !nets.has(builder.find(builder.driverOutput(driver)))) continue;
+    const start = builder.faninStart(driver);
+    const pins = [builder.faninAt(start + Pin.Set), builder.faninAt(start + Pin.Reset)];
+    if (kind !== GateKind.Register || pins.some((net) => net !== NO_NET)) return false;
+  }
+  return true;
+}
+
+const leave = 'leave one of them';
+
+/** An array that clock edges alone write can be a memory, with a port for each of them. */
+function wayOut({ inRegisters }: ModuleBody, block: BlockScope, symbol: number): string {
+  const { symbols } = block;
+  if (inRegisters.has(symbols.start(symbol))) return leave;
+  const words = [...block.vectors(symbol)].length;
+  const bits = words * symbols.width(symbol);
+  return (
+    `${leave}, or let it be a memory of ${bits} bits, with a port for each: ` +
+    `--memories-from ${bits}`
+  );
+}
+
+function report(
+  body: ModuleBody,
+  what: string,
+  drivers: readonly Origin[],
+  cure: string = leave,
+): void {
   const [first, second, ...others] = drivers.map((origin) => spanOf(body, origin));
   const related = [first, ...others].flatMap((span) =>
     span === undefined ? [] : [{ message: 'also driven here', span }],
   );
-  const message = `${what} has ${drivers.length} drivers; leave one of them`;
+  const message = `${what} has ${drivers.length} drivers; ${cure}`;
   body.diagnostics.add('net-multiply-driven', message, second ?? first, related.slice(0, 10));
 }
 
