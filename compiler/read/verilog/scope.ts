@@ -138,6 +138,8 @@ export interface Elaboration {
   readonly budget: Budget;
   /** Value given to a net at power-up by `initial`, 0 or 1, collected before registers are made. */
   readonly initialValues: Map<NetId, 0 | 1>;
+  /** Whether there are parameters with real values. */
+  readonly hasReals?: boolean;
   /** Lets a process drive a bit of a variable, which may be z; absent where no process is built. */
   driveFloating?(net: NetId, bit: FloatingBit): void;
   /** Tells that what drives a bit of a variable next hands on a net as it is, z too. */

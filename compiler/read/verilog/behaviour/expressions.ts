@@ -1,7 +1,7 @@
 import type { NetId } from '../../../circuit/ids.js';
 import type { Expression, UnaryOperator } from '../syntax.js';
 import { invert, negate } from './arithmetic.js';
-import { bitsOf, hasUnknown, resize, unknownBits } from './bits.js';
+import { bitsOf, hasUnknown, resize, signedValue, unknownBits } from './bits.js';
 import { isTrue } from './compare.js';
 import type { Context } from './context.js';
 import { operandOf } from './floatingBits.js';
@@ -10,6 +10,7 @@ import type { Bits } from './logic.js';
 import { bindingOf, refuse } from './names.js';
 import { applyCompare, applyContext, applyShift } from './operators.js';
 import { pathText, report } from './report.js';
+import { roundedReal } from './roundedReal.js';
 import { mayRead, readPart, readSelect } from './selects.js';
 import { join, operatorRule, shapeOf, unsizedWidth } from './widths.js';
 
@@ -58,6 +59,11 @@ export function lowerSelf(expression: Expression, context: Context): Bits {
 
 /** The nets of an expression assigned to something of a width (clause 5.5.3). */
 export function lowerAssigned(expression: Expression, context: Context, width: number): Bits {
+  const rounded = roundedReal(expression, context);
+  if (rounded !== undefined) {
+    const value = BigInt.asUintN(width, signedValue(rounded.value, rounded.width));
+    return bitsOf({ value, unknown: 0n }, width, context.logic);
+  }
   const shape = shapeOf(expression, context);
   const bits = lower(expression, context, Math.max(width, shape.width), shape.signed);
   return bits.slice(0, width);
@@ -65,6 +71,11 @@ export function lowerAssigned(expression: Expression, context: Context, width: n
 
 /** The truth value of an expression as a condition. */
 export function lowerCondition(expression: Expression, context: Context): NetId {
+  const real = roundedReal(expression, context);
+  if (real !== undefined) {
+    const holds = real.real === undefined ? real.value !== 0n : real.real !== 0;
+    return context.logic.constant(holds ? 1 : 0);
+  }
   if (context.access !== 'all') {
     const folded = foldSelf(expression, context);
     if (folded !== undefined) return context.logic.constant(folded === 0n ? 0 : 1);

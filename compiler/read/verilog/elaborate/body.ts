@@ -104,6 +104,7 @@ export class ModuleBody implements OuterHost {
   /** Likewise memories. */
   readonly outerMemories = new Map<HeldMemory, HeldMemory>();
   dependsOnPlace = false;
+  hasReals = false;
 
   /** Positions of the arrays that are to be built from registers, whatever their size. */
   readonly inRegisters: ReadonlySet<Position>;

@@ -27,6 +27,7 @@ export function bindParameters(
       const isNeeded = !isReal(item) || isKnown(value, scope);
       const given = override ?? (isNeeded ? evaluateConstant(value, scope) : undefined);
       const constant = given && (isReal(item) ? realOf(given) : typed(given, type));
+      if (constant?.real !== undefined) body.hasReals = true;
       const none = isReal(item) ? REAL_VALUE : NO_VALUE;
       const index = constant === undefined ? none : scope.constants.push(constant) - 1;
       const { msb, lsb } = type?.range ?? { msb: (constant?.width ?? 1) - 1, lsb: 0 };

@@ -1,6 +1,6 @@
 import { describe, expect, it } from 'vitest';
 import type { Circuit } from '../../../../compiler/circuit/circuit.js';
-import { circuitOf, netsOf, reading, scopesOf, signalValue } from './reading.js';
+import { circuitOf, evaluate, netsOf, reading, scopesOf, signalValue } from './reading.js';
 
 const constant = `module constant (y);
   parameter W = 8, VALUE = 3;
@@ -51,6 +51,42 @@ describe('parameters', () => {
       module t (output [1:0] y, output [5:0] z); m u1 (y); m #(6) u2 (z); endmodule`);
     expect(signalValue(circuit, 'y', {})).toBe(6 & 3);
     expect(signalValue(circuit, 'z', {})).toBe(14);
+  });
+
+  it.each([
+    ['2.5', 3],
+    ['-2.5', 253],
+    ['R', 3],
+    ['-R', 253],
+    ['R * 2', 5],
+    ['ONE / 2', 1],
+    ['N / 2', 0],
+    ['1 ? R + 0.1 : N', 3],
+    ['R > 2.4 ? 7 : 8', 7],
+    ['H', 1],
+    ['H - 0.01', 0],
+    ["(R > 2.4) ? {clk, 1'b1} & 2'b01 : 8", 1],
+    ["(H - 0.2 ? 7 : 8) & {8{1'b1}}", 7],
+  ])('round what real numbers give where %s is assigned to bits (4.8.2)', (text, value) => {
+    const module = `module m #(parameter real R = 2.5, ONE = 1, parameter N = 1, H = 0.5)
+        (input clk, output [7:0] y, output reg [7:0] q);
+        assign #(R, H) y = ${text};
+        always @(posedge clk) q <= #H ${text};
+      endmodule`;
+    const circuit = circuitOf(module);
+    expect(signalValue(circuit, 'y', {})).toBe(value);
+    const { data } = circuit.registers;
+    expect(
+      [...data].reduce((sum, net, i) => sum + evaluate(circuit, net, new Map()) * 2 ** i, 0),
+    ).toBe(value);
+  });
+
+  it('of real numbers have no sums with signals', () => {
+    const { problems } =
+      reading(`module m #(parameter real R = 2.5) (input [3:0] a, output [3:0] y, z);
+      assign y = a + R;
+      assign z = a + 0.5; endmodule`);
+    expect(problems).toEqual(['not-supported R@2', 'not-supported 0.5@3']);
   });
 
   it('may be real numbers, which stay so until a whole number is declared', () => {

@@ -12,7 +12,7 @@ function messages(items: string): string[] {
 describe('a name that is declared but cannot be used at a place', () => {
   it.each([
     ['real r; assign y = r;', 'not-supported', '`r` is a real number'],
-    ['parameter real R = 1.5; assign y = R;', 'not-supported', '`R` is a real number'],
+    ['parameter real R = 1.5; assign y = R & a;', 'not-supported', '`R` is a real number'],
     ['event e; assign y = e;', 'not-supported', '`e` is a named event'],
     ['event e; reg q; always @(posedge e) q <= a;', 'not-supported', '`e` is a named event'],
     ['wire w; localparam P = w;', 'constant-required', '`w` is a signal, but a constant'],
