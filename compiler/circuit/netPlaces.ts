@@ -1,6 +1,7 @@
 import type { Circuit } from './circuit.js';
 import { gateInfo } from './gates.js';
 import { netName, primaryNames } from './hierarchy.js';
+import { instanceAt } from './instanceText.js';
 
 /**
  * Names nets for a message: `a (top.v:12), nand at top.v:13 and 5 more`.
@@ -26,8 +27,8 @@ export function placeOfNet(circuit: Circuit, net: number): string {
 }
 
 /**
- * A net with the line of what drives it: `a (top.v:12)`, or `nand at top.v:12` where it has no
- * name. `shown` makes what is written of the path of a file.
+ * A net with the line of what drives it: `a (top.v:12)`, or where it has no name `nand at top.v:12`,
+ * with the instance if one begins there: `nand g1 at …`, `nand in u7 at …` for a cell. `shown` makes what is written of the path of a file.
  */
 export function placedNet(
   circuit: Circuit,
@@ -38,6 +39,11 @@ export function placedNet(
   const source = circuit.sources[circuit.originSource[net]!];
   const name = netName(circuit.hierarchy, names, net);
   if (source === undefined) return name;
-  const line = `${shown(source.path)}:${source.place(circuit.originOffset[net]!).line}`;
-  return names[net]! < 0 ? `${gateInfo(circuit.kind[net]!).name} at ${line}` : `${name} (${line})`;
+  const offset = circuit.originOffset[net]!;
+  const line = `${shown(source.path)}:${source.place(offset).line}`;
+  if (names[net]! >= 0) return `${name} (${line})`;
+  const kind = gateInfo(circuit.kind[net]!).name;
+  const instance = instanceAt(source, offset);
+  if (instance === undefined) return `${kind} at ${line}`;
+  return `${kind} ${instance.cell === kind ? '' : 'in '}${instance.name} at ${line}`;
 }

@@ -16,7 +16,7 @@ export class NetWords {
     this.#names = primaryNames(circuit.hierarchy, circuit.netCount);
   }
 
-  /** The name nearest to the top, or `nand at file.v:12` where it has none. */
+  /** The name nearest to the top, or `nand in u7 at file.v:12` where it has none. */
   name(net: number): string {
     if (!this.hasName(net)) return this.placed(net);
     return netName(this.#circuit.hierarchy, this.#names, net);

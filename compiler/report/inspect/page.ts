@@ -178,8 +178,8 @@ function pathWords(steps: readonly PathStep[]): string[] {
   return [...steps.slice(0, -2).map(stepText), `${last.net} (${before.kind}, output)`];
 }
 
-const stepText = ({ net, kind, file, line }: PathStep): string =>
-  file === undefined ? `${net} (${kind})` : `${kind} at ${file}:${line}`;
+const stepText = ({ net, kind, file }: PathStep): string =>
+  file === undefined ? `${net} (${kind})` : net;
 
 const fanoutWords = ({ fanouts }: Inspection): string[] =>
   tallied(fanouts.filter(({ readers }) => readers > 1).map(({ net, readers }) => [net, readers]));
