@@ -122,6 +122,29 @@ describe('a bus of segments that pass a value on to either side', () => {
   it('settles however far the values go', async () => {
     expect(await responseTo(segments, rows)).toEqual(expected);
   });
+
+  it('is given 16 rounds, which may be too few, where it leads through a memory', async () => {
+    const design = designOf(
+      circuitFrom(`
+        module stored (input clk, we, up, input [23:0] driven, value, output [23:0] y);
+          reg m [0:511]; initial begin m[0] = 0; m[1] = 1; end
+          always @(posedge clk) if (we) m[{9{up}}] <= ~up;
+          wire [23:0] near = up ? {y[22:0], 1'b0} : y >> 1;
+          wire [23:0] through = {near[23:13], m[near[12]], near[11:0]};
+          assign y = (driven & value) | (~driven & through);
+        endmodule`),
+    );
+    // From one end to the other, once in each direction.
+    const courses = [
+      `0 1 ${binary(1, 24)} ${binary(1, 24)}`,
+      `0 0 1${binary(0, 23)} ${binary(0, 24)}`,
+    ];
+    await onEachEngine(design, 'zero', (engine, name) => {
+      const run = (): string[] => play(engine, courses);
+      if (name === 'reference') expect(run()).toEqual(['1'.repeat(24), '0'.repeat(24)]);
+      else expect(run, name).toThrow('in 16 rounds, and only the reference engine makes more: ');
+    });
+  });
 });
 
 describe('the Muller pipeline', () => {

@@ -29,8 +29,11 @@ export interface Moment {
   readonly before?: SettledMoment;
   /** At the start of a cycle: what a net that a loop remembers holds. */
   readonly kept?: (net: number) => NetValue;
-  /** Takes what is 1 where a loop does not settle. */
-  readonly unsettled: (when: NetValue, nets: Uint32Array) => void;
+  /**
+   * Takes what is 1 where a loop does not settle, its nets, and the rounds that it is given, unless
+   * it would not settle in more of them.
+   */
+  readonly unsettled: (when: NetValue, nets: Uint32Array, rounds?: number) => void;
 }
 
 /** A moment in which the logic has settled. */

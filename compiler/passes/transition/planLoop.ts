@@ -9,6 +9,8 @@ export interface LoopPlan {
   readonly rounds: number;
   /** Whether it settles in that many rounds whatever it reads. */
   readonly isProven: boolean;
+  /** Whether it may settle in more rounds. */
+  readonly isCut: boolean;
 }
 
 /** Combinations tried; all of them where there are no more than this. */
@@ -59,11 +61,11 @@ export function planLoop(
     if (run.rounds === limit) settles = false;
     else rounds = Math.max(rounds, run.rounds);
   }
-  if (trials.areExhaustive) return { rounds, isProven: settles };
+  if (trials.areExhaustive) return { rounds, isProven: settles, isCut: false };
   const enough = remembered + 1;
   const isAffordable = enough * nets.length <= MOST_UNROLLED;
   if (rounds > FEW_ROUNDS && isAffordable) rounds = Math.max(rounds, enough);
-  return { rounds, isProven: false };
+  return { rounds, isProven: false, isCut: rounds < limit };
 }
 
 /** A value as a constant, a variable, or a variable's inverse. */

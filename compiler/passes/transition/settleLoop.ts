@@ -2,7 +2,7 @@ import { GateKind, isGate } from '../../circuit/gates.js';
 import { roundLimit } from '../../circuit/loops.js';
 import type { NetValue } from './algebra.js';
 import type { Moment, SettledMoment } from './moment.js';
-import { planLoop } from './planLoop.js';
+import { type LoopPlan, planLoop } from './planLoop.js';
 import { Rounds } from './rounds.js';
 
 /** Rounds of a loop that leads through a memory, whose words cannot be tried out. */
@@ -28,7 +28,7 @@ export function settleLoop(
   const start = Array.from(nets, (net) => startValue(settled, net));
   if (isUnchanged(settled, loop, start, outside)) return start;
   const plan = readsMemory(moment, nets)
-    ? { rounds: Math.min(roundLimit(nets.length), MEMORY_ROUNDS), isProven: false }
+    ? throughMemory(nets)
     : planLoop(
         moment,
         nets,
@@ -46,11 +46,17 @@ export function settleLoop(
     .reduce((any, each) => algebra.or(any, each));
   if (moves === algebra.zero) return values;
   if (!algebra.hasUnknown) {
-    moment.unsettled(moves, nets);
+    moment.unsettled(moves, nets, plan.isCut ? plan.rounds : undefined);
     return values;
   }
   const ternary = rounds.runTernary(start, (net) => remembers(moment, net));
   return values.map((value, i) => algebra.mux(moves, value, ternary[i]!));
+}
+
+function throughMemory({ length }: Uint32Array): LoopPlan {
+  const limit = roundLimit(length);
+  const rounds = Math.min(limit, MEMORY_ROUNDS);
+  return { rounds, isProven: false, isCut: rounds < limit };
 }
 
 // Gates start from what they were, registers and latches from what they hold now. A gate that the

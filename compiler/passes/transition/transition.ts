@@ -117,8 +117,12 @@ function followCycle(scene: Scene, shape: CycleShape): CourseOfCycle {
   const inputs = (active: readonly boolean[]): Moment['inputs'] =>
     inputValues(scene, active, (net) => row.value(row.bitOf(net)));
   const before = inputValues(scene, shape.start, (net) => states.previousInput(row.bitOf(net)));
-  const start = atStart(scene, before, (when, nets) => {
-    const message = `a loop does not settle: ${describeNets(circuit, nets)}`;
+  const start = atStart(scene, before, (when, nets, rounds) => {
+    const what =
+      rounds === undefined
+        ? 'a loop does not settle'
+        : `a loop does not settle in ${rounds} rounds, and only the reference engine makes more`;
+    const message = `${what}: ${describeNets(circuit, nets)}`;
     faults.push({ when, message, place: placeOfNet(circuit, nets[0]!) });
   });
   const applied = withInputs(start, inputs(shape.start));
