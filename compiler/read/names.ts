@@ -5,9 +5,15 @@ export type { NameId };
 /** The hash that `intern` computes, of no bytes. */
 export const EMPTY_HASH = 0x811c9dc5 | 0;
 
-// FNV-1 (http://www.isthe.com/chongo/tech/comp/fnv/): as the last byte is only mixed in, names that
-// differ in it, such as n10 … n17, can have neighbouring slots and share a line of the cache.
+// The multiplier of FNV-1 (http://www.isthe.com/chongo/tech/comp/fnv/).
 const PRIME = 0x01000193;
+
+// Netlists number their names, and use those with near numbers together. So small a multiplier for
+// digits lets such names have near slots, in few lines of the cache and pages of the memory; it is
+// more than ten, so that no two numbers of a length meet, and odd, so that no bit gets lost. What
+// closes an index after its number leaves them near.
+const DIGIT = 11;
+const multiplierOf = new Int32Array(256).fill(PRIME).fill(DIGIT, 0x30, 0x3a).fill(1, 0x5d, 0x5e).fill(13, 0x5f, 0x60);
 
 // Multipliers that spread the upper bits of a hash: 2^32 divided by the golden ratio (Knuth, TAOCP
 // vol. 3, 6.4; from memory), and that of MurmurHash3's finalizer.
@@ -16,7 +22,7 @@ const TAG_SPREAD = 0x85ebca6b;
 
 /** The hash of some bytes and one more. */
 export function hashStep(hash: number, byte: number): number {
-  return Math.imul(hash, PRIME) ^ byte;
+  return (Math.imul(hash, multiplierOf[byte]!) + byte) | 0;
 }
 
 const encoder = new TextEncoder();
@@ -30,8 +36,9 @@ export class NameTable {
   /** The names themselves. */
   readonly texts: NameTexts;
   /**
-   * An open hash table, half full at most: -1 where it is empty, else an id in the lower bits and
-   * in the others, below the sign, some bits of the name's hash. `#idMask` has the bits of ids.
+   * An open hash table, half full at most: 0 where it is empty, else an id in the lower bits and in
+   * the others some bits of the name's hash. `#idMask` has the bits of ids. The empty name, whose
+   * id is 0, is not in it, so that pages without names are never touched.
    */
   #slots: Int32Array;
   #idMask: number;
@@ -40,9 +47,9 @@ export class NameTable {
   constructor(expected = 1000) {
     const capacity = 2 ** Math.ceil(Math.log2(Math.max(expected, 1000)));
     this.texts = new NameTexts(capacity);
-    this.#slots = new Int32Array(capacity * 2).fill(-1);
+    this.#slots = new Int32Array(capacity * 2);
     this.#idMask = capacity - 1;
-    this.intern(new Uint8Array(0), 0, 0);
+    this.texts.add(new Uint8Array(0), 0, 0);
   }
 
   get count(): number {
@@ -56,14 +63,16 @@ export class NameTable {
 
   /** Does what `intern` does, where the `hashStep` of all bytes has been taken already. */
   internHashed(bytes: Uint8Array, start: number, end: number, hash: number): NameId {
+    if (start === end) return 0;
     const slots = this.#slots;
     const idMask = this.#idMask;
+    const mask = slots.length - 1;
     const tag = tagOf(hash, idMask);
-    let slot = slotOf(hash, slots.length - 1);
-    for (let entry = slots[slot]!; entry >= 0; entry = slots[slot]!) {
+    let slot = hash & mask;
+    for (let entry = slots[slot]!; entry !== 0; entry = slots[slot]!) {
       const id = entry & idMask;
       if ((entry & ~idMask) === tag && this.texts.equals(id, bytes, start, end)) return id;
-      slot = (slot + 1) & (slots.length - 1);
+      slot = nextSlot(hash, slot, mask);
     }
     const id = this.texts.add(bytes, start, end);
     slots[slot] = id | tag;
@@ -83,14 +92,14 @@ export class NameTable {
   }
 
   #grow(): void {
-    const slots = new Int32Array(this.#slots.length * 2).fill(-1);
+    const slots = new Int32Array(this.#slots.length * 2);
     const mask = slots.length - 1;
     const idMask = this.#idMask * 2 + 1;
     const { texts } = this;
-    for (let id = 0; id < texts.count; id++) {
+    for (let id = 1; id < texts.count; id++) {
       const hash = hashOf(texts.bytes, texts.start(id), texts.end(id));
-      let slot = slotOf(hash, mask);
-      while (slots[slot]! >= 0) slot = (slot + 1) & mask;
+      let slot = hash & mask;
+      while (slots[slot] !== 0) slot = nextSlot(hash, slot, mask);
       slots[slot] = id | tagOf(hash, idMask);
     }
     this.#slots = slots;
@@ -104,11 +113,12 @@ function hashOf(bytes: Uint8Array, start: number, end: number): number {
   return hash;
 }
 
-// Eight names that differ in the last byte alone stay together.
-function slotOf(hash: number, mask: number): number {
-  return (((Math.imul(hash >>> 3, SPREAD) >>> 8) << 3) | (hash & 7)) & mask;
+// Far off, as near slots are taken by whole runs of numbered names; but equally far for those that
+// stood together.
+function nextSlot(hash: number, slot: number, mask: number): number {
+  return (slot + ((Math.imul(hash >>> 10, SPREAD) >>> 8) | 1)) & mask;
 }
 
 function tagOf(hash: number, idMask: number): number {
-  return Math.imul(hash, TAG_SPREAD) & 0x7fffffff & ~idMask;
+  return Math.imul(hash, TAG_SPREAD) & ~idMask;
 }

@@ -1,6 +1,7 @@
 import { Char } from './characters.js';
-import { ConnectionKind, POSITIONAL } from './instances.js';
+import { ConnectionKind, type InstanceTable, POSITIONAL } from './instances.js';
 import type { Parser } from './parser.js';
+import type { Scanner } from './scan.js';
 import { endOfSpace } from './textEnds.js';
 
 // What a module imports is looked up anew at each use; these constants are not.
@@ -19,45 +20,11 @@ const MOST_DIGITS = 9;
  * Else the current token is then the `,` or `)` behind the last connection that was read.
  */
 export function readCommonConnections(p: Parser): boolean {
-  const { tokens, instances } = p;
+  const { tokens } = p;
   // Tokens of a macro stand elsewhere than their text.
   if (tokens.fixedStart >= 0) return false;
-  const { text, base, kind, value, at: next } = tokens;
-  let at = tokens.start - base;
-  let end = -1;
-  for (;;) {
-    let port = POSITIONAL;
-    if (text[at] === Dot) {
-      port = tokens.nameAt(at + 1);
-      if (port === 0) break;
-      at = endOfSpace(text, tokens.at);
-      if (text[at] !== LeftParen) break;
-      at = endOfSpace(text, at + 1);
-    }
-    const start = at;
-    const net = tokens.nameAt(start);
-    if (net === 0) break;
-    at = endOfSpace(text, tokens.at);
-    let index = -1;
-    if (text[at] === LeftBracket) {
-      const first = at + 1;
-      at = endOfDigits(text, first);
-      if (at === first || at > first + MOST_DIGITS || text[at] !== RightBracket) break;
-      index = numberIn(text, first, at);
-      at = endOfSpace(text, at + 1);
-    }
-    if (port !== POSITIONAL) {
-      if (text[at] !== RightParen) break;
-      at = endOfSpace(text, at + 1);
-    }
-    const isLast = text[at] === RightParen;
-    if (!isLast && text[at] !== Comma) break;
-    if (index < 0) instances.connect(port, Name, net, 0, base + start);
-    else instances.connect(port, Bit, net, index, base + start);
-    end = at;
-    if (isLast) break;
-    at = endOfSpace(text, at + 1);
-  }
+  const { kind, value, at: next } = tokens;
+  const end = connectionsFrom(tokens, p.instances, tokens.start - tokens.base);
   if (end >= 0) {
     tokens.goOn(end);
     return true;
@@ -66,6 +33,49 @@ export function readCommonConnections(p: Parser): boolean {
   tokens.value = value;
   tokens.at = next;
   return false;
+}
+
+/**
+ * Does so from an offset in the text on. Returns the offset of the `,` or `)` behind the last
+ * connection that was read, or -1 for none; the current token has no meaning then.
+ */
+export function connectionsFrom(tokens: Scanner, instances: InstanceTable, start: number): number {
+  const { text, base } = tokens;
+  let at = start;
+  let end = -1;
+  for (;;) {
+    let port = POSITIONAL;
+    if (text[at] === Dot) {
+      port = tokens.nameAt(at + 1);
+      if (port === 0) return end;
+      at = endOfSpace(text, tokens.at);
+      if (text[at] !== LeftParen) return end;
+      at = endOfSpace(text, at + 1);
+    }
+    const netStart = at;
+    const net = tokens.nameAt(netStart);
+    if (net === 0) return end;
+    at = endOfSpace(text, tokens.at);
+    let index = -1;
+    if (text[at] === LeftBracket) {
+      const first = at + 1;
+      at = endOfDigits(text, first);
+      if (at === first || at > first + MOST_DIGITS || text[at] !== RightBracket) return end;
+      index = numberIn(text, first, at);
+      at = endOfSpace(text, at + 1);
+    }
+    if (port !== POSITIONAL) {
+      if (text[at] !== RightParen) return end;
+      at = endOfSpace(text, at + 1);
+    }
+    const isLast = text[at] === RightParen;
+    if (!isLast && text[at] !== Comma) return end;
+    if (index < 0) instances.connect(port, Name, net, 0, base + netStart);
+    else instances.connect(port, Bit, net, index, base + netStart);
+    end = at;
+    if (isLast) return end;
+    at = endOfSpace(text, at + 1);
+  }
 }
 
 function endOfDigits(text: Uint8Array, from: number): number {

@@ -1,6 +1,7 @@
 import type { Position } from '../../diagnostics/sourceMap.js';
 import type { NameId } from '../names.js';
 import { readCommonConnections } from './commonConnections.js';
+import { Common, readCommonInstances } from './commonInstances.js';
 import { ConnectionKind, type InstanceExtras, POSITIONAL } from './instances.js';
 import { FIRST_GATE } from './keywords.js';
 import { isStrength, parseParameterValues, parseStrengthFrom, skipDelay } from './parseDelays.js';
@@ -32,6 +33,7 @@ const {
 
 /** name [ strength ] [ parameters ] instance { `,` instance } `;` (annex A.4.1 and A.5.4) */
 export function parseModuleInstances(p: Parser, items: Item[]): void {
+  if (parseCommonInstances(p, items)) return;
   const { tokens } = p;
   const { start, value: module } = tokens;
   p.beginItem(module);
@@ -55,6 +57,7 @@ export function parseModuleInstances(p: Parser, items: Item[]): void {
 
 /** gate [ strength ] [ delay ] instance { `,` instance } `;` (annex A.3.1) */
 export function parseGateInstances(p: Parser, items: Item[]): void {
+  if (parseCommonInstances(p, items)) return;
   const { tokens } = p;
   const { start } = tokens;
   const module = -1 - (tokens.kind - FIRST_GATE);
@@ -71,6 +74,22 @@ export function parseGateInstances(p: Parser, items: Item[]): void {
   skipDelay(p);
   const extras = strength && { range: undefined, parameters: [], strength };
   parseInstances(p, items, module, start, extras);
+}
+
+/** Reads as many items as can be read without tokens; whether there was any. */
+function parseCommonInstances(p: Parser, items: Item[]): boolean {
+  const { instances, tokens } = p;
+  const first = instances.count;
+  const end = readCommonInstances(p);
+  if (end === Common.Nothing) return false;
+  const last = instances.count - 1;
+  addInstances(items, first, last - first);
+  if (end === Common.Connection) parseConnections(p);
+  addInstances(items, last, 1);
+  if (end === Common.Items) return true;
+  if (p.accept(Comma)) parseInstances(p, items, instances.module(last), tokens.start, undefined);
+  else p.expect(Semicolon);
+  return true;
 }
 
 function parseInstances(
@@ -123,9 +142,14 @@ function parseOneInstance(
 ): void {
   const instance = p.instances.begin(module, name, position, extras);
   parseConnections(p);
+  addInstances(items, instance, 1);
+}
+
+function addInstances(items: Item[], first: number, count: number): void {
+  if (count === 0) return;
   const last = items[items.length - 1];
-  if (last?.kind === 'instances' && last.first + last.count === instance) last.count++;
-  else items.push({ kind: 'instances', first: instance, count: 1 });
+  if (last?.kind === 'instances' && last.first + last.count === first) last.count += count;
+  else items.push({ kind: 'instances', first, count });
 }
 
 function withRange(p: Parser, extras: InstanceExtras | undefined): InstanceExtras {
