@@ -360,17 +360,18 @@ export class CircuitBuilder {
 
   // Drivers come in any order; the published list is in net order.
   #sortedFanin(netCount: number): { faninStart: Uint32Array; fanin: Uint32Array } {
-    const faninStart = new Uint32Array(netCount + 1);
-    const fanin = new Uint32Array(this.#fanin.length);
-    let end = 0;
+    this.#driverStart.push(0);
+    // In place: the start of a net is read before it is written.
+    const faninStart = this.#driverStart.take();
+    const sorted = new GrowableUint32(this.#fanin.length);
     for (let net = 0; net < netCount; net++) {
-      faninStart[net] = end;
-      const start = this.#driverStart.get(net);
-      const count = this.#driverCount.get(net);
-      for (let i = 0; i < count; i++) fanin[end++] = this.#fanin.get(start + i);
+      const start = faninStart[net]!;
+      const end = start + this.#driverCount.get(net);
+      faninStart[net] = sorted.length;
+      for (let i = start; i < end; i++) sorted.push(this.#fanin.get(i));
     }
-    faninStart[netCount] = end;
-    return { faninStart, fanin };
+    faninStart[netCount] = sorted.length;
+    return { faninStart, fanin: sorted.take() };
   }
 }
 

@@ -1,4 +1,4 @@
-import { giveBack, numberList, SHORT } from './shortLists.js';
+import { giveBack, numberList, SHORT, spareList } from './shortLists.js';
 
 const LONG = 4096;
 
@@ -42,6 +42,29 @@ export class GrowableUint32 {
     const { length } = this.#data;
     // Never by little: it may be called for one batch after another.
     if (capacity > length) this.#resize(Math.max(capacity, Math.ceil(1.25 * length)));
+  }
+
+  /** Appends three entries. */
+  pushThree(first: number, second: number, third: number): void {
+    const at = this.#length;
+    if (at + 3 > this.#data.length) this.#grow(at + 3);
+    const data = this.#data;
+    data[at] = first;
+    data[at + 1] = second;
+    data[at + 2] = third;
+    this.#length = at + 3;
+  }
+
+  /** Appends four entries. */
+  pushFour(first: number, second: number, third: number, fourth: number): void {
+    const at = this.#length;
+    if (at + 4 > this.#data.length) this.#grow(at + 4);
+    const data = this.#data;
+    data[at] = first;
+    data[at + 1] = second;
+    data[at + 2] = third;
+    data[at + 3] = fourth;
+    this.#length = at + 4;
   }
 
   /** Appends `count` entries of one value. */
@@ -90,6 +113,13 @@ export class GrowableUint32 {
   /** Forgets all entries, and the room of a list that had become long. */
   clear(): void {
     if (this.#data.length > LONG) this.#data = noNumbers;
+    this.#length = 0;
+  }
+
+  /** Lets other lists use the memory of this one, which becomes empty; see `spareList`. */
+  release(): void {
+    spareList(this.#data);
+    this.#data = noNumbers;
     this.#length = 0;
   }
 

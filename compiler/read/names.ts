@@ -13,7 +13,11 @@ const PRIME = 0x01000193;
 // more than ten, so that no two numbers of a length meet, and odd, so that no bit gets lost. What
 // closes an index after its number leaves them near.
 const DIGIT = 11;
-const multiplierOf = new Int32Array(256).fill(PRIME).fill(DIGIT, 0x30, 0x3a).fill(1, 0x5d, 0x5e).fill(13, 0x5f, 0x60);
+const multiplierOf = new Int32Array(256)
+  .fill(PRIME)
+  .fill(DIGIT, 0x30, 0x3a)
+  .fill(1, 0x5d, 0x5e)
+  .fill(13, 0x5f, 0x60);
 
 // Multipliers that spread the upper bits of a hash: 2^32 divided by the golden ratio (Knuth, TAOCP
 // vol. 3, 6.4; from memory), and that of MurmurHash3's finalizer.

@@ -18,10 +18,12 @@ export const Common = {
   Nothing: 0,
   /** At the token behind a `;`. */
   Items: 1,
-  /** Behind the `(` of an instance, or the `,` of its connections, of which it has read some. */
-  Connection: 2,
+  /** Behind the `(` of an instance, none of whose connections it has read. */
+  Connections: 2,
+  /** Behind a `,` among the connections of an instance. */
+  Connection: 3,
   /** Behind the `)` of an instance. */
-  Instance: 3,
+  Instance: 4,
 } as const;
 
 /**
@@ -56,7 +58,7 @@ export function readCommonInstances(p: Parser): number {
     const end = connectionsFrom(tokens, instances, first);
     if (text[end] !== RightParen) {
       tokens.goOn(end < 0 ? open + 1 : end + 1);
-      return Common.Connection;
+      return end < 0 ? Common.Connections : Common.Connection;
     }
     const semicolon = endOfSpace(text, end + 1);
     if (text[semicolon] !== Semicolon) {

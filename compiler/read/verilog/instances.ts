@@ -108,11 +108,7 @@ export class InstanceTable {
       this.#extras ??= new Map();
       this.#extras.set(count, extras);
     }
-    const instances = this.#instances;
-    instances.push(module >>> 0);
-    instances.push(name);
-    instances.push(position);
-    instances.push(this.#connectionCount);
+    this.#instances.pushFour(module >>> 0, name, position, this.#connectionCount);
     return count;
   }
 
@@ -124,9 +120,14 @@ export class InstanceTable {
       this.#bits.push(first);
       this.#bits.push(second);
     }
-    this.#connection.push(port);
-    this.#connection.push(target | (kind << KIND));
-    this.#connection.push(position);
+    this.#connection.pushThree(port, target | (kind << KIND), position);
+  }
+
+  /** Lets other lists use the memory of this table, which becomes empty. */
+  release(): void {
+    this.#instances.release();
+    this.#connection.release();
+    this.#bits.release();
   }
 
   // With what has been read as a measure of what comes, a large table need not grow step by step.

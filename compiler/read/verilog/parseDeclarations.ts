@@ -1,5 +1,6 @@
 import type { Position } from '../../diagnostics/sourceMap.js';
 import type { NameId } from '../names.js';
+import { readCommonNames } from './commonNames.js';
 import { Keyword, type KeywordText } from './keywords.js';
 import { parseOptionalStrength, skipDelay } from './parseDelays.js';
 import {
@@ -98,6 +99,7 @@ function parseWires(p: Parser, items: Item[], kind: DeclaredKind, start: Positio
   const joins = last?.kind === 'declaration' && last.names instanceof PlainNames;
   const names = joins ? (last.names as PlainNames) : new PlainNames();
   do {
+    readCommonNames(p, names);
     if (tokens.kind !== Token.Identifier) p.fail('the name to declare');
     const { value: name, start: nameStart, end: nameEnd } = tokens;
     tokens.next();

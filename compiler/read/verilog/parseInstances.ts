@@ -84,7 +84,8 @@ function parseCommonInstances(p: Parser, items: Item[]): boolean {
   if (end === Common.Nothing) return false;
   const last = instances.count - 1;
   addInstances(items, first, last - first);
-  if (end === Common.Connection) parseConnections(p);
+  if (end === Common.Connections) parseConnections(p);
+  else if (end === Common.Connection) parseConnectionsFrom(p);
   addInstances(items, last, 1);
   if (end === Common.Items) return true;
   if (p.accept(Comma)) parseInstances(p, items, instances.module(last), tokens.start, undefined);
@@ -168,6 +169,12 @@ function parseConnections(p: Parser): void {
     tokens.next();
     return;
   }
+  parseConnectionsFrom(p);
+}
+
+/** connection { `,` connection } `)` */
+function parseConnectionsFrom(p: Parser): void {
+  const { tokens } = p;
   for (;;) {
     if (!readCommonConnections(p)) parseAnyConnection(p);
     if (tokens.kind !== Comma) break;

@@ -22,9 +22,12 @@ export class PlainNames implements Iterable<DeclaredName> {
 
   /** Adds a name without dimensions and value. */
   pushPlain(name: NameId, start: Position, end: Position): void {
-    this.#columns.push(name);
-    this.#columns.push(start);
-    this.#columns.push(end);
+    this.#columns.pushThree(name, start, end);
+  }
+
+  /** Lets other lists use the memory of this one, which becomes empty. */
+  release(): void {
+    this.#columns.release();
   }
 
   /** Adds any declared name. */

@@ -65,12 +65,8 @@ export class Children {
   add(template: number, name: NameId, block: number, origin: Origin, width: number): number {
     if (this.#budget?.grow(Field.Size + width) === false) throw tooLarge(origin);
     const records = this.#records;
-    records.push(template);
-    records.push(name);
-    records.push(block);
-    records.push(origin.source);
-    records.push(origin.offset);
-    records.push(this.#ports.length);
+    records.pushThree(template, name, block);
+    records.pushThree(origin.source, origin.offset, this.#ports.length);
     this.#ports.extend(width, NO_NET);
     return this.#count++;
   }

@@ -1,10 +1,12 @@
 import { CircuitBuilder } from '../../../circuit/builder.js';
 import { type BusProblem, resolveBuses } from '../../../circuit/busResolution.js';
 import type { Circuit } from '../../../circuit/circuit.js';
+import { dropSpare } from '../../../circuit/shortLists.js';
 import type { Diagnostics } from '../../../diagnostics/diagnostics.js';
 import type { Source } from '../../../diagnostics/source.js';
 import type { Position, SourceMap } from '../../../diagnostics/sourceMap.js';
 import { type Allowance, BudgetExceeded } from '../budget.js';
+import { PlainNames } from '../plainNames.js';
 import type { ModuleSyntax, VerilogSyntax } from '../syntax.js';
 import { addBoxPorts } from './boxPorts.js';
 import { compileBox } from './compileBox.js';
@@ -47,7 +49,8 @@ export interface ElaborateOptions {
  *
  * Each module is compiled once for each set of parameter values and then stamped into the circuit
  * for every instance. A connected port is one net with what it is connected to. `sources` must be
- * the map that `syntax` was read with. Returns undefined if anything is wrong, after reporting it.
+ * the map that `syntax` was read with; `syntax` is used up. Returns undefined if anything is wrong,
+ * after reporting it.
  */
 export function elaborate(
   syntax: VerilogSyntax,
@@ -67,6 +70,8 @@ export function elaborate(
     } catch (error) {
       if (!(error instanceof NeedsRegisters)) throw error;
       inRegisters.add(error.position);
+    } finally {
+      dropSpare();
     }
   }
 }
@@ -141,6 +146,7 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
     );
   }
   if (design.diagnostics.hasErrors) return undefined;
+  for (const each of design.modules) useUp(each);
   const builder = new CircuitBuilder(design.netsOf(index) + SOME, design.names.texts);
   reserveNames(builder, design, top);
   for (const source of design.sources.sources) builder.addSource(source);
@@ -151,6 +157,14 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
   reportLateDrivers(design, builder);
   if (!design.diagnostics.hasErrors) reportBuses(design, resolveBuses(builder));
   return design.diagnostics.hasErrors ? undefined : builder.finish(top.name);
+}
+
+/** Lets the circuit use the memory of what only compiling the module has needed. */
+function useUp({ instances, items }: ModuleSyntax): void {
+  instances.release();
+  for (const item of items) {
+    if (item.kind === 'declaration' && item.names instanceof PlainNames) item.names.release();
+  }
 }
 
 // Nets that are made beside those of modules, for buses.

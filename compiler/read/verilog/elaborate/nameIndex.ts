@@ -28,6 +28,14 @@ export class NameIndex {
     return this.#slots[slot] === name ? this.#slots[slot + 1]! : -1;
   }
 
+  /** Makes room for so many entries more, whose names are all below `end`. */
+  reserve(more: number, end: NameId): void {
+    const count = this.#count + more;
+    if (this.#dense === undefined && count >= LEAST_DENSE && end < SPARSITY * count) {
+      this.#makeDense(end);
+    }
+  }
+
   /** Gives a name its number. */
   set(name: NameId, value: number): void {
     if (this.#dense === undefined && this.#count * 4 >= this.#slots.length) this.#grow();
@@ -60,11 +68,7 @@ export class NameIndex {
   #grow(): void {
     const old = this.#slots;
     if (this.#count >= LEAST_DENSE && this.#greatest < SPARSITY * this.#count) {
-      const dense = longer(new Int32Array(0), 2 * this.#greatest);
-      for (let i = 0; i < old.length; i += 2)
-        if (old[i] !== EMPTY) dense[old[i]!] = old[i + 1]! + 1;
-      this.#dense = dense;
-      this.#slots = new Uint32Array(0);
+      this.#makeDense(2 * this.#greatest);
       return;
     }
     this.#slots = emptySlots(2 * old.length);
@@ -74,6 +78,17 @@ export class NameIndex {
       this.#slots[slot] = old[i]!;
       this.#slots[slot + 1] = old[i + 1]!;
     }
+    giveBack(old);
+  }
+
+  #makeDense(length: number): void {
+    const old = this.#slots;
+    const dense = new Int32Array(length);
+    for (let i = 0; i < old.length; i += 2) {
+      if (old[i] !== EMPTY) dense[old[i]!] = old[i + 1]! + 1;
+    }
+    this.#dense = dense;
+    this.#slots = new Uint32Array(0);
     giveBack(old);
   }
 }

@@ -142,9 +142,7 @@ export class Recording implements GateSink {
   #add(declared: number): NetId {
     this.#grow(NUMBERS_OF_NET);
     this.#declared.push(declared);
-    this.#nets.push(this.#atSource);
-    this.#nets.push(this.#atOffset);
-    this.#nets.push(0);
+    this.#nets.pushThree(this.#atSource, this.#atOffset, 0);
     return netId(this.#netCount++);
   }
 
@@ -262,9 +260,7 @@ export class Recording implements GateSink {
   /** Adds what drives a net part of the time or weakly; `control` is `NO_NET` for always. */
   busPart(net: NetId, data: NetId, control: NetId, traits: PartTraits): void {
     this.#begin(net, BUS_PART);
-    this.#fanin.push(data);
-    this.#fanin.push(control);
-    this.#fanin.push(packTraits(traits));
+    this.#fanin.pushThree(data, control, packTraits(traits));
   }
 
   /** The nets that write ports read; some may stand there several times. */
@@ -352,10 +348,7 @@ export class Recording implements GateSink {
     const count = ++this.#driverCount;
     if (this.#firstDriver(root) === 0) this.#setFirstDriver(root, count);
     this.#kind.push(kind);
-    this.#drivers.push(net);
-    this.#drivers.push(this.#fanin.length);
-    this.#drivers.push(this.#atSource);
-    this.#drivers.push(this.#atOffset);
+    this.#drivers.pushFour(net, this.#fanin.length, this.#atSource, this.#atOffset);
   }
 
   #firstDriver(net: number): number {
@@ -372,10 +365,7 @@ export class Recording implements GateSink {
   }
 
   #pins(pins: LatchPins, control: NetId, edge: number): void {
-    this.#fanin.push(control);
-    this.#fanin.push(pins.data ?? NO_NET);
-    this.#fanin.push(pins.set ?? NO_NET);
-    this.#fanin.push(pins.reset ?? NO_NET);
+    this.#fanin.pushFour(control, pins.data ?? NO_NET, pins.set ?? NO_NET, pins.reset ?? NO_NET);
     const priority = pins.priority ?? Priority.ResetWins;
     this.#fanin.push(packAttributes(edge, priority, pins.initial ?? X));
   }

@@ -75,7 +75,7 @@ function reserve(body: ModuleBody, scope: BlockScope, items: readonly Item[]): v
     else if (item.kind === 'instances') instances += item.count;
   }
   if (nets + instances < MANY) return;
-  scope.symbols.reserve(nets + instances);
+  scope.symbols.reserve(nets + instances, body.names.count);
   // Some of them have several bits.
   body.builder.reserve(body.builder.netCount + Math.ceil(1.25 * nets));
 }

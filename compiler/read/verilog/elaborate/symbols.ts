@@ -100,9 +100,11 @@ export class SymbolTable {
     return this.#count;
   }
 
-  /** Makes room for so many symbols more. */
-  reserve(more: number): void {
+  /** Makes room for so many symbols more, whose names are all below `end`. */
+  reserve(more: number, end: NameId): void {
     this.#records.reserve((this.#count + more) * RECORD);
+    if (this.#index === undefined) this.#makeIndex();
+    this.#index!.reserve(more, end);
   }
 
   /** The symbol of a name, or -1. */
@@ -147,10 +149,11 @@ export class SymbolTable {
 
   /** Adds a symbol; the name must be new. */
   add(symbol: NewSymbol): number {
-    const id = this.#count++;
+    const id = this.#count;
     const { flags = 0, netClass = NetClass.Plain, msb = 0, lsb = 0 } = symbol;
     if (this.#index === undefined && id === SHORT) this.#makeIndex();
     this.#index?.set(symbol.name, id);
+    this.#count++;
     const { start, end } = symbol;
     const length = end - start;
     const isRare = msb !== 0 || lsb !== 0 || length < 0 || length > MOST_LENGTH;
@@ -159,11 +162,8 @@ export class SymbolTable {
       this.#rarities.set(id, { msb, lsb, end });
     }
     const kind = symbol.kind | (isRare ? RARE : 0);
-    const records = this.#records;
-    records.push(symbol.name);
-    records.push(kind | (flags << FLAGS) | (netClass << CLASS) | (isRare ? 0 : length << LENGTH));
-    records.push(symbol.value);
-    records.push(start);
+    const traits = kind | (flags << FLAGS) | (netClass << CLASS) | (isRare ? 0 : length << LENGTH);
+    this.#records.pushFour(symbol.name, traits, symbol.value, start);
     return id;
   }
 
@@ -232,7 +232,7 @@ export class SymbolTable {
 
   #makeIndex(): void {
     this.#index = new NameIndex(2 * SHORT);
-    for (let symbol = 0; symbol < SHORT; symbol++) this.#index.set(this.name(symbol), symbol);
+    for (let symbol = 0; symbol < this.#count; symbol++) this.#index.set(this.name(symbol), symbol);
   }
 
   #get(symbol: number, field: number): number {
