@@ -8,26 +8,23 @@ export const EMPTY_HASH = 0x811c9dc5 | 0;
 // The multiplier of FNV-1 (http://www.isthe.com/chongo/tech/comp/fnv/).
 const PRIME = 0x01000193;
 
-// Netlists number their names, and use those with near numbers together. So small a multiplier for
-// digits lets such names have near slots, in few lines of the cache and pages of the memory; it is
-// more than ten, so that no two numbers of a length meet, and odd, so that no bit gets lost. What
-// closes an index after its number leaves them near.
-const DIGIT = 11;
-const multiplierOf = new Int32Array(256)
-  .fill(PRIME)
-  .fill(DIGIT, 0x30, 0x3a)
-  .fill(1, 0x5d, 0x5e)
-  .fill(13, 0x5f, 0x60);
+/**
+ * What the hash of a name is multiplied by before each byte is added.
+ *
+ * Netlists number their names, and use those with near numbers together. So small a multiplier for
+ * digits lets such names have near slots, in few lines of the cache and pages of the memory; it is
+ * more than ten, so that no two numbers of a length meet, and odd, so that no bit gets lost. What
+ * joins or closes an index after its number leaves them near, too.
+ */
+export const hashMultipliers: Int32Array = new Int32Array(256).fill(PRIME);
+hashMultipliers.fill(11, 0x30, 0x3a);
+hashMultipliers[0x5d] = 1; // ]
+hashMultipliers[0x5f] = 13; // _
 
 // Multipliers that spread the upper bits of a hash: 2^32 divided by the golden ratio (Knuth, TAOCP
 // vol. 3, 6.4; from memory), and that of MurmurHash3's finalizer.
 const SPREAD = 0x9e3779b1;
 const TAG_SPREAD = 0x85ebca6b;
-
-/** The hash of some bytes and one more. */
-export function hashStep(hash: number, byte: number): number {
-  return (Math.imul(hash, multiplierOf[byte]!) + byte) | 0;
-}
 
 const encoder = new TextEncoder();
 
@@ -65,7 +62,10 @@ export class NameTable {
     return this.internHashed(bytes, start, end, hashOf(bytes, start, end));
   }
 
-  /** Does what `intern` does, where the `hashStep` of all bytes has been taken already. */
+  /**
+   * Does what `intern` does, where the hash of the bytes has been taken already: beginning with
+   * `EMPTY_HASH`, for each byte `(Math.imul(hash, hashMultipliers[byte]) + byte) | 0`.
+   */
   internHashed(bytes: Uint8Array, start: number, end: number, hash: number): NameId {
     if (start === end) return 0;
     const slots = this.#slots;
@@ -113,7 +113,10 @@ export class NameTable {
 
 function hashOf(bytes: Uint8Array, start: number, end: number): number {
   let hash = EMPTY_HASH;
-  for (let i = start; i < end; i++) hash = hashStep(hash, bytes[i]!);
+  for (let i = start; i < end; i++) {
+    const byte = bytes[i]!;
+    hash = (Math.imul(hash, hashMultipliers[byte]!) + byte) | 0;
+  }
   return hash;
 }
 

@@ -1,5 +1,5 @@
 import type { Position } from '../../diagnostics/sourceMap.js';
-import { EMPTY_HASH, hashStep, type NameId, type NameTable } from '../names.js';
+import { EMPTY_HASH, hashMultipliers, type NameId, type NameTable } from '../names.js';
 import { Char, CharClass, charClass, isNamePart, isSpace } from './characters.js';
 import { decode } from './decode.js';
 import { strayText } from './failureText.js';
@@ -28,7 +28,8 @@ const IDENTIFIER = Token.Identifier;
 const FIRST_WORD = Token.FirstKeyword - 1;
 const singles = singleTokens;
 const classes = charClass;
-const step = hashStep;
+const multipliers = hashMultipliers;
+const START = EMPTY_HASH;
 const LETTER = CharClass.Letter;
 const BACKSLASH = Char.Backslash;
 
@@ -267,12 +268,15 @@ export class Scanner {
   #identifier(start: number): void {
     const text = this.text;
     const limit = text.length;
+    // Looked up once, and not for each byte.
+    const kinds = classes;
+    const factors = multipliers;
     let at = start;
-    let hash = EMPTY_HASH;
+    let hash = START;
     while (at < limit) {
       const c = text[at]!;
-      if (charClass[c]! < CharClass.Letter) break;
-      hash = hashStep(hash, c);
+      if (kinds[c]! < LETTER) break;
+      hash = (Math.imul(hash, factors[c]!) + c) | 0;
       at++;
     }
     this.at = at;
@@ -334,12 +338,14 @@ export class Scanner {
   #escaped(start: number): void {
     const text = this.text;
     const limit = text.length;
+    const kinds = classes;
+    const factors = multipliers;
     let at = start + 1;
-    let hash = EMPTY_HASH;
+    let hash = START;
     while (at < limit) {
       const c = text[at]!;
-      if (classes[c] === BLANK) break;
-      hash = step(hash, c);
+      if (kinds[c] === BLANK) break;
+      hash = (Math.imul(hash, factors[c]!) + c) | 0;
       at++;
     }
     this.at = at;

@@ -1,5 +1,9 @@
 import { Char, CharClass, charClass, isNamePart } from './characters.js';
 
+// What a module imports is looked up anew at each use.
+const classes = charClass;
+const SPACE = CharClass.Space;
+
 /** The offset after the name characters from an offset on. */
 export function endOfName(text: Uint8Array, from: number): number {
   let at = from;
@@ -9,8 +13,9 @@ export function endOfName(text: Uint8Array, from: number): number {
 
 /** The offset after the white space from an offset on. */
 export function endOfSpace(text: Uint8Array, from: number): number {
+  const limit = text.length;
   let at = from;
-  while (at < text.length && charClass[text[at]!] === CharClass.Space) at++;
+  while (at < limit && classes[text[at]!] === SPACE) at++;
   return at;
 }
 

@@ -30,7 +30,16 @@ const wellNamed = fc
 const connections = fc.array(fc.oneof(net, wellNamed, wellNamed, named), { maxLength: 6 });
 // An @ marks a gap.
 const head = fc.constantFrom(
-  ...['inv u@(', 'inv @u@(', 'nand (', 'nand@(', 'not n@(', 'inv@\\u/1 (', 'inv #(2)@u (', 'inv (@'],
+  ...[
+    'inv u@(',
+    'inv @u@(',
+    'nand (',
+    'nand@(',
+    'not n@(',
+    'inv@\\u/1 (',
+    'inv #(2)@u (',
+    'inv (@',
+  ],
   ...[
     'nand (strong0, strong1)@g@(',
     'inv (strong0, strong1) u (',
