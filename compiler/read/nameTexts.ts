@@ -23,10 +23,10 @@ export class NameTexts {
   readonly #cachedIds = new Int32Array(CACHED).fill(-1);
   readonly #cached: string[] = new Array<string>(CACHED).fill('');
 
-  /** Room for `capacity` names of eight bytes is made at once. */
-  constructor(capacity: number) {
-    this.#bytes = new Uint8Array(capacity * 8);
-    this.#starts = new Uint32Array(capacity);
+  /** Room for `expected` names of ten bytes is made at once; what is not used is never touched. */
+  constructor(expected: number) {
+    this.#bytes = new Uint8Array(Math.ceil(expected * 10));
+    this.#starts = new Uint32Array(Math.ceil(expected) + 2);
   }
 
   get count(): number {

@@ -21,6 +21,9 @@ hashMultipliers.fill(11, 0x30, 0x3a);
 hashMultipliers[0x5d] = 1; // ]
 hashMultipliers[0x5f] = 13; // _
 
+/** How full a hash table of names may be. */
+const FULL = 0.75;
+
 // Multipliers that spread the upper bits of a hash: 2^32 divided by the golden ratio (Knuth, TAOCP
 // vol. 3, 6.4; from memory), and that of MurmurHash3's finalizer.
 const SPREAD = 0x9e3779b1;
@@ -37,20 +40,21 @@ export class NameTable {
   /** The names themselves. */
   readonly texts: NameTexts;
   /**
-   * An open hash table, half full at most: 0 where it is empty, else an id in the lower bits and in
-   * the others some bits of the name's hash. `#idMask` has the bits of ids. The empty name, whose
-   * id is 0, is not in it, so that pages without names are never touched.
+   * An open hash table: 0 where it is empty, else an id in the lower bits, as many as slots have, and
+   * in the others some bits of the name's hash. The empty name, whose id is 0, is not in it, so that
+   * pages without names are never touched.
    */
   #slots: Int32Array;
-  #idMask: number;
+  /** So many names need a larger table. */
+  #most: number;
 
   /** Room for `expected` names is made at once; more than that cost some copying. */
   constructor(expected = 1000) {
-    const capacity = 2 ** Math.ceil(Math.log2(Math.max(expected, 1000)));
-    this.texts = new NameTexts(capacity);
-    this.#slots = new Int32Array(capacity * 2);
-    this.#idMask = capacity - 1;
+    const slots = 2 ** Math.ceil(Math.log2(Math.max(expected, 1000) / FULL));
+    this.texts = new NameTexts(FULL * slots);
     this.texts.add(new Uint8Array(0), 0, 0);
+    this.#slots = new Int32Array(slots);
+    this.#most = FULL * slots;
   }
 
   get count(): number {
@@ -69,18 +73,17 @@ export class NameTable {
   internHashed(bytes: Uint8Array, start: number, end: number, hash: number): NameId {
     if (start === end) return 0;
     const slots = this.#slots;
-    const idMask = this.#idMask;
     const mask = slots.length - 1;
-    const tag = tagOf(hash, idMask);
+    const tag = tagOf(hash, mask);
     let slot = hash & mask;
     for (let entry = slots[slot]!; entry !== 0; entry = slots[slot]!) {
-      const id = entry & idMask;
-      if ((entry & ~idMask) === tag && this.texts.equals(id, bytes, start, end)) return id;
+      const id = entry & mask;
+      if ((entry & ~mask) === tag && this.texts.equals(id, bytes, start, end)) return id;
       slot = nextSlot(hash, slot, mask);
     }
     const id = this.texts.add(bytes, start, end);
     slots[slot] = id | tag;
-    if (this.count > idMask) this.#grow();
+    if (this.count > this.#most) this.#grow();
     return id;
   }
 
@@ -98,16 +101,15 @@ export class NameTable {
   #grow(): void {
     const slots = new Int32Array(this.#slots.length * 2);
     const mask = slots.length - 1;
-    const idMask = this.#idMask * 2 + 1;
     const { texts } = this;
     for (let id = 1; id < texts.count; id++) {
       const hash = hashOf(texts.bytes, texts.start(id), texts.end(id));
       let slot = hash & mask;
       while (slots[slot] !== 0) slot = nextSlot(hash, slot, mask);
-      slots[slot] = id | tagOf(hash, idMask);
+      slots[slot] = id | tagOf(hash, mask);
     }
     this.#slots = slots;
-    this.#idMask = idMask;
+    this.#most = FULL * slots.length;
   }
 }
 
@@ -126,6 +128,6 @@ function nextSlot(hash: number, slot: number, mask: number): number {
   return (slot + ((Math.imul(hash >>> 10, SPREAD) >>> 8) | 1)) & mask;
 }
 
-function tagOf(hash: number, idMask: number): number {
-  return Math.imul(hash, TAG_SPREAD) & ~idMask;
+function tagOf(hash: number, mask: number): number {
+  return Math.imul(hash, TAG_SPREAD) & ~mask;
 }

@@ -28,7 +28,7 @@ export function parseVerilog(
 ): VerilogSyntax {
   // A guess for flat netlists; all it does is to save copying.
   const length = sources.reduce((sum, source) => sum + source.bytes.length, 0);
-  const names = new NameTable(Math.min(length / 40, 1 << 22));
+  const names = new NameTable(Math.min(length / 30, 1 << 24));
   internKeywords(names);
   const problems = new Problems(sourceMap, diagnostics);
   const preprocessor = new Preprocessor(names, sourceMap, problems, options);

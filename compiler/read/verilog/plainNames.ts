@@ -25,9 +25,18 @@ export class PlainNames implements Iterable<DeclaredName> {
     this.#columns.pushThree(name, start, end);
   }
 
-  /** Lets other lists use the memory of this one, which becomes empty. */
-  release(): void {
-    this.#columns.release();
+  /** The name at an index. */
+  name(index: number): NameId {
+    return this.#columns.get(STRIDE * index);
+  }
+
+  /** Where the entry at an index starts, and where it ends. */
+  start(index: number): Position {
+    return this.#columns.get(STRIDE * index + 1);
+  }
+
+  end(index: number): Position {
+    return this.#columns.get(STRIDE * index + 2);
   }
 
   /** Adds any declared name. */
@@ -39,30 +48,20 @@ export class PlainNames implements Iterable<DeclaredName> {
     this.pushPlain(declared.name, declared.start, declared.end);
   }
 
-  /** Calls `plain` for each name alone and `other` for each that has more, in their order. */
-  forEach(
-    plain: (name: NameId, start: Position, end: Position) => void,
-    other: (declared: DeclaredName) => void,
-  ): void {
-    const columns = this.#columns;
-    for (let i = 0; i < columns.length; i += STRIDE) {
-      const more = this.#others?.get(i / STRIDE);
-      if (more !== undefined) other(more);
-      else plain(columns.get(i), columns.get(i + 1), columns.get(i + 2));
-    }
+  /** The entry at an index, if it is more than a name. */
+  other(index: number): DeclaredName | undefined {
+    return this.#others?.get(index);
+  }
+
+  /** The entry at an index. */
+  at(index: number): DeclaredName {
+    const other = this.other(index);
+    if (other !== undefined) return other;
+    const place = { start: this.start(index), end: this.end(index) };
+    return { name: this.name(index), dimensions: NO_DIMENSIONS, value: undefined, ...place };
   }
 
   *[Symbol.iterator](): Iterator<DeclaredName> {
-    const columns = this.#columns;
-    for (let i = 0; i < columns.length; i += STRIDE) {
-      const other = this.#others?.get(i / STRIDE);
-      yield other ?? {
-        name: columns.get(i),
-        dimensions: NO_DIMENSIONS,
-        value: undefined,
-        start: columns.get(i + 1),
-        end: columns.get(i + 2),
-      };
-    }
+    for (let index = 0; index < this.length; index++) yield this.at(index);
   }
 }

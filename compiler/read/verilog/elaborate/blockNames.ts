@@ -38,7 +38,8 @@ class NameCollector {
 
   collect(): void {
     const { symbols } = this.#block;
-    for (let symbol = 0; symbol < symbols.count; symbol++) {
+    for (let place = 0; place < symbols.count; place++) {
+      const symbol = symbols.at(place);
       const kind = symbols.kind(symbol);
       if (kind === SymbolKind.Signal) this.#add(symbol, symbols.value(symbol));
       else if (kind === SymbolKind.Memory) this.#addWords(symbol);
@@ -71,7 +72,8 @@ class NameCollector {
 
 function bitsOf({ symbols, memories }: BlockScope): number {
   let bits = 0;
-  for (let symbol = 0; symbol < symbols.count; symbol++) {
+  for (let place = 0; place < symbols.count; place++) {
+    const symbol = symbols.at(place);
     const kind = symbols.kind(symbol);
     if (kind === SymbolKind.Signal) bits += symbols.width(symbol);
     if (kind !== SymbolKind.Memory) continue;

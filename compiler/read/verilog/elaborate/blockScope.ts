@@ -139,8 +139,7 @@ export class BlockScope implements Scope {
 
   *visibleNames(): Iterable<string> {
     for (let scope: BlockScope | undefined = this; scope; scope = scope.parent) {
-      const { symbols } = scope;
-      for (let i = 0; i < symbols.count; i++) yield this.shared.names.text(symbols.name(i));
+      for (const name of scope.symbols.names()) yield this.shared.names.text(name);
     }
   }
 

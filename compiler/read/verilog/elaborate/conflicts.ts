@@ -80,7 +80,8 @@ function collectDrivers(
 /** One message for each signal, however many of its bits are concerned. */
 function reportConflicts(body: ModuleBody, conflicts: Map<number, Origin[]>): void {
   for (const block of body.blocks) {
-    for (let symbol = 0; symbol < block.symbols.count; symbol++) {
+    for (let place = 0; place < block.symbols.count; place++) {
+      const symbol = block.symbols.at(place);
       if (isArray(block, symbol)) {
         reportArray(body, block, symbol, conflicts);
         continue;
@@ -150,7 +151,8 @@ function symbolOf(
 ): { readonly block: BlockScope; readonly symbol: number } | undefined {
   for (const block of scope?.shared.blocks ?? []) {
     const { symbols } = block;
-    for (let symbol = 0; symbol < symbols.count; symbol++) {
+    for (let place = 0; place < symbols.count; place++) {
+      const symbol = symbols.at(place);
       const width = symbols.width(symbol);
       for (const { first } of block.vectors(symbol)) {
         for (let own: number = first; own < first + width; own++) {

@@ -78,7 +78,7 @@ function connectInstance(
     connectPort(body, connected, connection, template.ports[place]!);
   }
   if (connections < template.ports.length) finishUnconnected(body, connected);
-  joinRepeats(body, connected);
+  if (template.repeats.length > 0) joinRepeats(body, connected);
 }
 
 /** Index of the port that a connection names, or -1 after a report. */

@@ -38,6 +38,9 @@ interface Kind {
   readonly strength: DeclarationItem['strength'];
 }
 
+/** From so many plain wires on it saves memory to leave their names where they are. */
+const LONG = 64;
+
 /** Declares the names of one item in a scope (IEEE 1364-2005, clauses 4 and 12.3). */
 export function declare(body: ModuleBody, scope: BlockScope, item: DeclarationItem): void {
   const { type } = item;
@@ -58,28 +61,21 @@ export function declare(body: ModuleBody, scope: BlockScope, item: DeclarationIt
     for (const declared of item.names) declareNet(body, scope, declared, kind);
     return;
   }
-  item.names.forEach(
-    (name, start, end) => {
-      if (scope.symbols.find(name) < 0) declareWire(body, scope, name, netClass, start, end);
-      else declareNet(body, scope, { name, dimensions: [], value: undefined, start, end }, kind);
-    },
-    (declared) => declareNet(body, scope, declared, kind),
-  );
+  declareWires(body, scope, item.names, kind);
 }
 
 // A flat netlist declares a million of them.
-function declareWire(
-  body: ModuleBody,
-  { symbols }: BlockScope,
-  name: NameId,
-  netClass: number,
-  start: number,
-  end: number,
-): void {
-  body.buildAt(start);
-  const value = body.builder.declare(1);
-  const { Signal: kind } = SymbolKind;
-  symbols.add({ name, kind, value, start, end, flags: Flag.Typed, netClass });
+function declareWires(body: ModuleBody, scope: BlockScope, names: PlainNames, kind: Kind): void {
+  const { symbols } = scope;
+  const isLong = names.length >= LONG;
+  for (let index = 0; index < names.length; index++) {
+    const name = names.name(index);
+    const other = names.other(index);
+    if (isLong && other === undefined && symbols.find(name) < 0) {
+      body.buildAt(names.start(index));
+      symbols.addWire(names, index, body.builder.declare(1), kind.netClass);
+    } else declareNet(body, scope, other ?? names.at(index), kind);
+  }
 }
 
 /** Declares an implicit scalar net (clause 4.5). */

@@ -16,7 +16,8 @@ export function netClassesOf(body: ModuleBody): NetClasses {
   const classes = new Map<number, number>();
   for (const block of body.blocks) {
     const { symbols } = block;
-    for (let symbol = 0; symbol < symbols.count; symbol++) {
+    for (let place = 0; place < symbols.count; place++) {
+      const symbol = symbols.at(place);
       const netClass = symbols.netClass(symbol);
       if (netClass === NetClass.Plain) continue;
       for (const { first } of block.vectors(symbol)) {

@@ -6,7 +6,6 @@ import type { Diagnostics } from '../../../diagnostics/diagnostics.js';
 import type { Source } from '../../../diagnostics/source.js';
 import type { Position, SourceMap } from '../../../diagnostics/sourceMap.js';
 import { type Allowance, BudgetExceeded } from '../budget.js';
-import { PlainNames } from '../plainNames.js';
 import type { ModuleSyntax, VerilogSyntax } from '../syntax.js';
 import { addBoxPorts } from './boxPorts.js';
 import { compileBox } from './compileBox.js';
@@ -146,7 +145,8 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
     );
   }
   if (design.diagnostics.hasErrors) return undefined;
-  for (const each of design.modules) useUp(each);
+  // Only compiling their module has needed them.
+  for (const { instances } of design.modules) instances.release();
   const builder = new CircuitBuilder(design.netsOf(index) + SOME, design.names.texts);
   reserveNames(builder, design, top);
   for (const source of design.sources.sources) builder.addSource(source);
@@ -157,14 +157,6 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
   reportLateDrivers(design, builder);
   if (!design.diagnostics.hasErrors) reportBuses(design, resolveBuses(builder));
   return design.diagnostics.hasErrors ? undefined : builder.finish(top.name);
-}
-
-/** Lets the circuit use the memory of what only compiling the module has needed. */
-function useUp({ instances, items }: ModuleSyntax): void {
-  instances.release();
-  for (const item of items) {
-    if (item.kind === 'declaration' && item.names instanceof PlainNames) item.names.release();
-  }
 }
 
 // Nets that are made beside those of modules, for buses.

@@ -87,11 +87,11 @@ function simpleTerminals(
   const table = body.module.instances;
   const first = table.connectionStart(instance);
   const end = table.connectionStart(instance + 1);
-  const nets: NetId[] = [];
+  const nets = new Array<NetId>(end - first);
   for (let connection = first; connection < end; connection++) {
     const net = simpleNet(body, scope, table, connection, connection - first < outputCount);
     if (net === NOT_SIMPLE) return undefined;
-    nets.push(net);
+    nets[connection - first] = net;
   }
   return nets;
 }

@@ -7,7 +7,7 @@ const EMPTY = 0xffffffff;
 const LEAST_DENSE = 4096;
 const SPARSITY = 4;
 
-/** A map from names to numbers below 2^31: some eight to sixteen bytes an entry, no objects. */
+/** A map from names to numbers below 2^31 - 1: some eight to sixteen bytes an entry, no objects. */
 export class NameIndex {
   // Pairs of name and number in an open hash table; its capacity is a power of two.
   #slots: Uint32Array;
@@ -26,6 +26,18 @@ export class NameIndex {
     if (dense !== undefined) return name < dense.length ? dense[name]! - 1 : -1;
     const slot = this.#slot(name);
     return this.#slots[slot] === name ? this.#slots[slot + 1]! : -1;
+  }
+
+  /** All names and their numbers. */
+  *[Symbol.iterator](): Iterator<[name: NameId, value: number]> {
+    const dense = this.#dense;
+    for (let name = 0; dense !== undefined && name < dense.length; name++) {
+      if (dense[name] !== 0) yield [name, dense[name]! - 1];
+    }
+    const slots = this.#slots;
+    for (let i = 0; i < slots.length; i += 2) {
+      if (slots[i] !== EMPTY) yield [slots[i]!, slots[i + 1]!];
+    }
   }
 
   /** Makes room for so many entries more, whose names are all below `end`. */

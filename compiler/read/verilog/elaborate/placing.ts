@@ -11,7 +11,7 @@ import { evaluateRange } from './constants.js';
 import { defparamsOf } from './defparams.js';
 import { NO_TEMPLATE } from './design.js';
 import { type DeepOverride, noOverrides, type Overrides } from './overrides.js';
-import { SymbolKind } from './symbols.js';
+import { SymbolKind, type SymbolTable } from './symbols.js';
 import { wordBefore, wordFrom } from './wordNear.js';
 
 /** For so many instances room is made at once. */
@@ -23,15 +23,28 @@ const MANY = 10_000;
  */
 export function nameInstances(body: ModuleBody): void {
   const table = body.module.instances;
+  const areMany = table.count >= MANY;
+  const positionOf = (number: number): Position => positionOfInstance(body, number);
   let number = 0;
   for (const { scope, item } of body.instances) {
+    const { symbols } = scope;
     for (let instance = item.first; instance < item.first + item.count; instance++) {
       const value = table.module(instance) < 0 ? NOT_PLACED : number++;
       const name = table.name(instance);
-      if (name !== 0) addName(body, scope, name, value, table.position(instance));
+      if (name === 0 || isNameTaken(body, scope, name, table.position(instance))) continue;
+      if (areMany && value !== NOT_PLACED) symbols.addInstance(name, value, positionOf);
+      else addName(symbols, name, value, table.position(instance));
     }
   }
   body.placed.extend(number, NOT_PLACED);
+}
+
+function positionOfInstance(body: ModuleBody, wanted: number): Position {
+  let position = 0;
+  forEachInstance(body, (_, instance, number) => {
+    if (number === wanted) position = body.module.instances.position(instance);
+  });
+  return position;
 }
 
 /**
@@ -73,21 +86,21 @@ function forEachInstance(
   }
 }
 
-function addName(
+function isNameTaken(
   body: ModuleBody,
   { symbols }: BlockScope,
   name: NameId,
-  value: number,
   position: Position,
-): void {
-  if (symbols.find(name) >= 0) {
-    const { start, end } = wordFrom(body, name, position);
-    body.reportTaken(symbols, name, start, end);
-    return;
-  }
+): boolean {
+  if (symbols.find(name) < 0) return false;
+  const { start, end } = wordFrom(body, name, position);
+  body.reportTaken(symbols, name, start, end);
+  return true;
+}
+
+function addName(symbols: SymbolTable, name: NameId, value: number, position: Position): void {
   // The end of the word is found out when a message needs it.
-  const { Instance: kind } = SymbolKind;
-  symbols.add({ name, kind, value, start: position, end: position });
+  symbols.add({ name, kind: SymbolKind.Instance, value, start: position, end: position });
 }
 
 function placeInstance(

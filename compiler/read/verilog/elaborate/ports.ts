@@ -84,7 +84,8 @@ function portNets({ root }: ModuleBody, expression: Expression): Omit<BoundPort,
 
 function reportUnlisted(body: ModuleBody, inHeader: ReadonlySet<NameId>): void {
   const { symbols } = body.root;
-  for (let symbol = 0; symbol < symbols.count; symbol++) {
+  for (let place = 0; place < symbols.count; place++) {
+    const symbol = symbols.at(place);
     const name = symbols.name(symbol);
     if (symbols.kind(symbol) !== SymbolKind.Signal || inHeader.has(name)) continue;
     if ((symbols.flags(symbol) & Flag.Inout) === 0) continue;

@@ -198,28 +198,49 @@ export class Stamper {
 
   /** Makes the nets that are not connected yet, and all drivers. */
   #fill(frame: Frame, depth: number): void {
-    const { template, nets, origin } = frame;
+    const { template, origin } = frame;
     const { tables } = template.recording;
     if (origin !== undefined) this.#builder.at(origin.source, origin.offset);
     this.#makeNets(frame);
     // What drives each net, for tables: another driver of a bus may have come first.
     const driven = tables.length > 0 ? new Map<number, NetId>() : undefined;
     this.#makeDrivers(frame, driven);
-    for (const [net, level] of template.constants ?? []) this.constants.add(nets[net]!, level);
-    for (const { output, inputs, table } of tables) {
+    // A loop over nothing takes longer than to see that there is nothing.
+    if (driven !== undefined) this.#addTables(frame, driven);
+    if (template.constants !== undefined) this.#noteConstants(frame);
+    if (template.farInitials !== undefined) this.#noteFarInitials(frame, depth);
+    if (template.valueNames !== undefined) this.#nameValues(frame);
+    if (template.netTypes !== undefined) this.#setNetTypes(frame);
+  }
+
+  #noteConstants({ template, nets }: Frame): void {
+    for (const [net, level] of template.constants!) this.constants.add(nets[net]!, level);
+  }
+
+  #addTables({ template, nets }: Frame, driven: ReadonlyMap<number, NetId>): void {
+    for (const { output, inputs, table } of template.recording.tables) {
       const own = inputs.map((net) => netId(nets[net]!));
-      this.#builder.table(driven!.get(nets[output]!)!, own, table);
+      this.#builder.table(driven.get(nets[output]!)!, own, table);
     }
-    for (const [net, value] of template.farInitials ?? []) {
+  }
+
+  #noteFarInitials({ template, nets }: Frame, depth: number): void {
+    for (const [net, value] of template.farInitials!) {
       const own = nets[net]!;
       const known = this.#farInitials.get(own);
       if (known === undefined || depth <= known.depth) this.#farInitials.set(own, { value, depth });
     }
-    for (const { nets: own, names } of template.valueNames ?? []) {
+  }
+
+  #nameValues({ template, nets }: Frame): void {
+    for (const { nets: own, names } of template.valueNames!) {
       const moved = Uint32Array.from(own, (net) => nets[net]!);
       if (!moved.includes(NO_NET)) this.#builder.nameValues({ nets: moved, names });
     }
-    for (const [net, type] of template.netTypes ?? []) {
+  }
+
+  #setNetTypes({ template, nets }: Frame): void {
+    for (const [net, type] of template.netTypes!) {
       this.#builder.setNetType(netId(nets[net]!), type);
     }
   }
@@ -312,17 +333,21 @@ export class Stamper {
   ): void {
     const { hierarchy } = this.#builder;
     const { blocks } = template;
-    let module = this.#modules[number];
-    if (module === undefined) {
-      const added = blocks.map(({ names }) => hierarchy.addModule(names));
-      module = added[0] ?? 0;
-      this.#modules[number] = module;
-    }
+    const module = this.#modules[number] ?? this.#addModule(number);
     for (let index = 0; index < blocks.length; index++) {
       const block = blocks[index]!;
       const outer = index === 0 ? parent : scopes[block.parent]!;
       const own = index === 0 ? name : block.name;
       scopes[index] = hierarchy.addScopeOf(own, outer, module + index, nets, block.nets);
     }
+  }
+
+  /** Adds the names of a template's blocks; returns the index of the first. */
+  #addModule(number: number): number {
+    const { hierarchy } = this.#builder;
+    const { blocks } = this.#templates[number]!;
+    const [first = 0] = blocks.map(({ names }) => hierarchy.addModule(names));
+    this.#modules[number] = first;
+    return first;
   }
 }

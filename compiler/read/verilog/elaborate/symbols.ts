@@ -2,7 +2,9 @@ import { NetType } from '../../../circuit/busParts.js';
 import { GrowableUint32 } from '../../../circuit/growable.js';
 import type { Position } from '../../../diagnostics/sourceMap.js';
 import type { NameId } from '../../names.js';
+import type { PlainNames } from '../plainNames.js';
 import { NameIndex } from './nameIndex.js';
+import { WireRuns } from './wireRuns.js';
 
 /** What a name of a module is; the comment tells what the symbol's `value` then holds. */
 export const SymbolKind = {
@@ -88,29 +90,54 @@ interface Rarity {
   readonly end: Position;
 }
 
-/** The names of one scope: sixteen bytes a scalar, so that a module may have a million. */
+// Numbers of symbols that have no record: from `WIRE` on the wires, by their nets, and from
+// `INSTANCE` on the instances, by their numbers.
+const WIRE = 1 << 29;
+const INSTANCE = 1 << 30;
+
+const WIRE_TRAITS = SymbolKind.Signal | (Flag.Typed << FLAGS);
+
+/**
+ * The names of one scope: sixteen bytes for most, and next to nothing for the plain wires and the
+ * instances of a netlist, of which a module may have a million.
+ */
 export class SymbolTable {
   /** Only of a table that has become too long for looking at each of its names. */
   #index: NameIndex | undefined;
   readonly #records = new GrowableUint32(2 * RECORD);
   #rarities: Map<number, Rarity> | undefined;
-  #count = 0;
+  #recorded = 0;
+  #wires: WireRuns | undefined;
+  #positionOf: ((instance: number) => Position) | undefined;
 
+  /** How many symbols there are, without those of `addInstance`. */
   get count(): number {
-    return this.#count;
+    return this.#recorded + (this.#wires?.count ?? 0);
   }
 
-  /** Makes room for so many symbols more, whose names are all below `end`. */
+  /** The symbol at a place below `count`, in the order in which they were added. */
+  at(place: number): number {
+    if (this.#wires === undefined) return place;
+    const found = this.#wires.at(place);
+    return found < 0 ? -1 - found : WIRE + found;
+  }
+
+  /** All names. */
+  *names(): Iterable<NameId> {
+    for (let place = 0; place < this.count; place++) yield this.name(this.at(place));
+    if (this.#positionOf === undefined) return;
+    for (const [name, symbol] of this.#index!) if (symbol >= INSTANCE) yield name;
+  }
+
+  /** Makes room for the names of so many symbols more, which are all below `end`. */
   reserve(more: number, end: NameId): void {
-    this.#records.reserve((this.#count + more) * RECORD);
-    if (this.#index === undefined) this.#makeIndex();
-    this.#index!.reserve(more, end);
+    this.#madeIndex().reserve(more, end);
   }
 
   /** The symbol of a name, or -1. */
   find(name: NameId): number {
     if (this.#index !== undefined) return this.#index.get(name);
-    for (let symbol = 0; symbol < this.#count; symbol++) {
+    for (let symbol = 0; symbol < this.#recorded; symbol++) {
       if (this.#get(symbol, Field.Name) === name) return symbol;
     }
     return -1;
@@ -127,6 +154,7 @@ export class SymbolTable {
 
   /** As `scalar`, of a symbol. */
   scalarAt(symbol: number, drives: boolean): number {
+    if (symbol >= WIRE) return symbol < INSTANCE ? symbol - WIRE : -1;
     const records = this.#records;
     const at = symbol * RECORD;
     const traits = records.get(at + Field.Traits);
@@ -149,22 +177,46 @@ export class SymbolTable {
 
   /** Adds a symbol; the name must be new. */
   add(symbol: NewSymbol): number {
-    const id = this.#count;
-    const { flags = 0, netClass = NetClass.Plain, msb = 0, lsb = 0 } = symbol;
-    if (this.#index === undefined && id === SHORT) this.#makeIndex();
-    this.#index?.set(symbol.name, id);
-    this.#count++;
-    const { start, end } = symbol;
+    const {
+      name,
+      value,
+      start,
+      end,
+      flags = 0,
+      netClass = NetClass.Plain,
+      msb = 0,
+      lsb = 0,
+    } = symbol;
     const length = end - start;
     const isRare = msb !== 0 || lsb !== 0 || length < 0 || length > MOST_LENGTH;
     if (isRare) {
       this.#rarities ??= new Map();
-      this.#rarities.set(id, { msb, lsb, end });
+      this.#rarities.set(this.#recorded, { msb, lsb, end });
     }
     const kind = symbol.kind | (isRare ? RARE : 0);
     const traits = kind | (flags << FLAGS) | (netClass << CLASS) | (isRare ? 0 : length << LENGTH);
-    this.#records.pushFour(symbol.name, traits, symbol.value, start);
+    const id = this.#recorded;
+    if (this.#index === undefined && id === SHORT) this.#madeIndex();
+    this.#index?.set(name, id);
+    this.#records.pushFour(name, traits, value, start);
+    this.#recorded++;
     return id;
+  }
+
+  /** Adds a scalar wire of a net class that has the name at an index of `names`, which is new. */
+  addWire(names: PlainNames, index: number, net: number, netClass: number): void {
+    this.#wires ??= new WireRuns();
+    this.#wires.add(names, index, net, WIRE_TRAITS | (netClass << CLASS), this.#recorded);
+    this.#madeIndex().set(names.name(index), WIRE + net);
+  }
+
+  /**
+   * Adds an instance under a new name. `positionOf` tells where the instance of a number stands, and
+   * is the same for all.
+   */
+  addInstance(name: NameId, number: number, positionOf: (number: number) => Position): void {
+    this.#positionOf = positionOf;
+    this.#madeIndex().set(name, INSTANCE + number);
   }
 
   name(symbol: number): NameId {
@@ -186,6 +238,7 @@ export class SymbolTable {
 
   /** End of the name's text, or its start where only a message needs to find it out. */
   end(symbol: number): Position {
+    if (symbol >= WIRE && symbol < INSTANCE) return this.#wires!.end(symbol - WIRE);
     const length = this.#get(symbol, Field.Traits) >>> LENGTH;
     return this.#rarity(symbol)?.end ?? this.start(symbol) + length;
   }
@@ -196,7 +249,7 @@ export class SymbolTable {
   }
 
   addFlags(symbol: number, flags: number): void {
-    this.#set(symbol, Field.Traits, this.#get(symbol, Field.Traits) | (flags << FLAGS));
+    this.#setTraits(symbol, this.#get(symbol, Field.Traits) | (flags << FLAGS));
   }
 
   /** A `NetClass`. */
@@ -206,7 +259,7 @@ export class SymbolTable {
 
   setNetClass(symbol: number, netClass: number): void {
     const others = this.#get(symbol, Field.Traits) & ~(NIBBLE << CLASS);
-    this.#set(symbol, Field.Traits, others | (netClass << CLASS));
+    this.#setTraits(symbol, others | (netClass << CLASS));
   }
 
   /** Declared left index, also of a parameter's bits; 0 for a scalar. */
@@ -230,16 +283,35 @@ export class SymbolTable {
     return this.#rarities!.get(symbol);
   }
 
-  #makeIndex(): void {
+  #madeIndex(): NameIndex {
+    if (this.#index !== undefined) return this.#index;
     this.#index = new NameIndex(2 * SHORT);
-    for (let symbol = 0; symbol < this.#count; symbol++) this.#index.set(this.name(symbol), symbol);
+    for (let symbol = 0; symbol < this.#recorded; symbol++) {
+      this.#index.set(this.name(symbol), symbol);
+    }
+    return this.#index;
   }
 
   #get(symbol: number, field: number): number {
+    if (symbol >= WIRE) return this.#withoutRecord(symbol, field);
     return this.#records.get(symbol * RECORD + field);
   }
 
-  #set(symbol: number, field: number, value: number): void {
-    this.#records.set(symbol * RECORD + field, value);
+  #withoutRecord(symbol: number, field: number): number {
+    if (symbol >= INSTANCE) {
+      const number = symbol - INSTANCE;
+      if (field === Field.Value) return number;
+      return field === Field.Traits ? SymbolKind.Instance : this.#positionOf!(number);
+    }
+    const net = symbol - WIRE;
+    if (field === Field.Value) return net;
+    const wires = this.#wires!;
+    if (field === Field.Traits) return wires.traits(net);
+    return field === Field.Name ? wires.name(net) : wires.start(net);
+  }
+
+  #setTraits(symbol: number, traits: number): void {
+    if (symbol < WIRE) this.#records.set(symbol * RECORD + Field.Traits, traits);
+    else this.#wires!.setTraits(symbol - WIRE, traits);
   }
 }

@@ -28,7 +28,8 @@ export function reportUndriven(
   for (const open of body.openInputs) reportOpenInput(body, open, isDriven);
   for (const scope of body.blocks) {
     const { symbols } = scope;
-    for (let symbol = 0; symbol < symbols.count; symbol++) {
+    for (let place = 0; place < symbols.count; place++) {
+      const symbol = symbols.at(place);
       const kind = symbols.kind(symbol);
       if (kind === SymbolKind.Signal) {
         reportSignal(body, scope, symbol, { first: symbols.value(symbol), index: '' }, isOpen);
