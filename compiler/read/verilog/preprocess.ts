@@ -9,7 +9,8 @@ import { readBetween, readLine, readWord, skipContinued, skipDefault } from './d
 import { laterSyntax } from './laterStandard.js';
 import { type Macro, macroActuals, macroBody, substitute } from './macros.js';
 import type { Problems } from './problems.js';
-import { Scanner, type ScannerClient } from './scan.js';
+import { Scanner } from './scan.js';
+import type { ScannerClient } from './scannerClient.js';
 import { initialSettings, type Settings, settingDirectives } from './settings.js';
 import { endOfName } from './textEnds.js';
 

@@ -7,6 +7,7 @@ import { currentVersion, reservedWords } from './keywords.js';
 import { laterQuote } from './laterStandard.js';
 import { baseOfLetter, SIGNED_BASE } from './numbers.js';
 import { scanOperator, singleTokens } from './operators.js';
+import type { ScannerClient } from './scannerClient.js';
 import {
   endOfAttribute,
   endOfBlockComment,
@@ -29,19 +30,8 @@ const FIRST_WORD = Token.FirstKeyword - 1;
 const singles = singleTokens;
 const classes = charClass;
 const multipliers = hashMultipliers;
-const START = EMPTY_HASH;
 const LETTER = CharClass.Letter;
 const BACKSLASH = Char.Backslash;
-
-/** Who gives the scanner its texts and hears of problems. */
-export interface ScannerClient {
-  /** Called at a backtick: reads a directive or macro use, and moves the scanner past it. */
-  directive(): void;
-  /** Called at the end of a text: goes on in the text around it, or returns false. */
-  endOfText(): boolean;
-  /** Reports text that is no token. */
-  problem(message: string, start: Position, end: Position): void;
-}
 
 /**
  * Tokens of Verilog (IEEE 1364-2005, clause 3) from bytes.
@@ -268,11 +258,10 @@ export class Scanner {
   #identifier(start: number): void {
     const text = this.text;
     const limit = text.length;
-    // Looked up once, and not for each byte.
     const kinds = classes;
     const factors = multipliers;
     let at = start;
-    let hash = START;
+    let hash = EMPTY_HASH;
     while (at < limit) {
       const c = text[at]!;
       if (kinds[c]! < LETTER) break;
@@ -341,7 +330,7 @@ export class Scanner {
     const kinds = classes;
     const factors = multipliers;
     let at = start + 1;
-    let hash = START;
+    let hash = EMPTY_HASH;
     while (at < limit) {
       const c = text[at]!;
       if (kinds[c] === BLANK) break;

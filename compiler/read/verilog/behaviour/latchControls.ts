@@ -49,6 +49,8 @@ export class LatchControlSearch {
     const enable = rest === undefined ? logic.zero : rest.assigned;
     // Without a state of its own it is no latch.
     if (logic.valueOf(enable) === 1) return undefined;
+    // What only ever takes one value on is said to be enabled: its control may be a clock.
+    if (logic.valueOf(enable) === 0 && new Set(values).size === 1) return undefined;
     const { set, reset, priority } = asyncPins(values, controls, logic);
     return {
       priority,

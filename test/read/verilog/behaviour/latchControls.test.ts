@@ -35,6 +35,8 @@ describe('a latch that an always describes', () => {
     ['always @* if (r) q = 0; else if (s) q = 1;', 'set reset reset wins'],
     ['always @* if (s | r) q = s;', 'set reset set wins'],
     ['always @* if (en) q = d ^ r;', 'enable data'],
+    ['always @* if (!r) q = 0;', 'enable data'],
+    ['always @* if (r) q = 1; else if (s) q = 1;', 'enable data'],
   ])('has the pins that `%s` says', (body, pins) => {
     expect(pinsOf(body)).toBe(pins);
   });
