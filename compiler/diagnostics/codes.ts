@@ -73,8 +73,8 @@ export const codeTable = {
     'Split it into an input and an output where it is both.',
   ),
   'supply-assumed': note(
-    'An inout port of the top module has the name of a supply and is held at its level.',
-    'Nothing where it is one; else declare it as an input.',
+    'An inout port of the top module, or a net there without driver, has the name of a supply and is held at its level.',
+    'Nothing where it is one; else declare it as an input, or drive it.',
   ),
   'supply-absent': note(
     'Instances connect power pins that the models of their cells do not have.',

@@ -78,14 +78,15 @@ export function libertyLibrary(withPower: boolean): string {
   }`;
 }
 
-/** How a netlist has its power: not at all, as plain inouts of the top, or declared as supplies. */
-export type Power = 'none' | 'inout' | 'declared' | 'input';
+/** How a netlist has its power: by ports of the top or nets inside it, declared as supplies or not. */
+export type Power = 'none' | 'inout' | 'declared' | 'input' | 'inner';
 
 /** A netlist of two levels over the library. */
 export function netlist(kind: Power): string {
   const on = kind !== 'none';
   const pins = on ? ', .VDD(VDD), .VSS(VSS), .VPB(VDD), .VNB(VSS)' : '';
   const ports = on ? ', VDD, VSS' : '';
+  const hasPorts = on && kind !== 'inner';
   const passed = on ? ', .VDD(VDD), .VSS(VSS)' : '';
   const declared = kind === 'input' ? 'input' : 'inout';
   const supplies = kind === 'declared' || kind === 'input' ? 'supply1 VDD; supply0 VSS;' : '';
@@ -96,8 +97,8 @@ export function netlist(kind: Power): string {
       NR2 g (.A(a), .B(q), .Y(n)${pins});
       XR2 x (.A(a), .B(q), .Y(y)${pins});
     endmodule
-    module chip (a, g, c, r, y, z${ports});
-      input a, g, c, r; output y, z; ${on ? `${declared} VDD, VSS;` : ''} ${supplies}
+    module chip (a, g, c, r, y, z${hasPorts ? ports : ''});
+      input a, g, c, r; output y, z; ${hasPorts ? `${declared} VDD, VSS;` : ''} ${supplies}
       wire l, one;
       TIEH t (.Y(one)${pins});
       LAT e (.D(a), .G(g), .Q(l)${pins});

@@ -36,11 +36,14 @@ describe('a netlist with power pins', () => {
       for (const threeValued of [false, true]) {
         const [plain] = read('none', 'Verilog without power pins');
         const wanted = await responseTo(plain, rows, { threeValued });
-        for (const kind of ['inout', 'declared', 'input'] as const) {
+        for (const kind of ['inout', 'declared', 'input', 'inner'] as const) {
           const [circuit, codes] = read(kind, library);
           expect(circuit.inputs.map(({ name }) => name)).toEqual(['a', 'g', 'c', 'r']);
           expect(circuit.outputs.map(({ name }) => name)).toEqual(['y', 'z']);
-          const ofPorts = kind === 'inout' ? ['supply-assumed', 'supply-assumed'] : [];
+          // An inner net is a supply to be assumed only where a model reads it.
+          const isRead = kind === 'inner' && library === 'Verilog with power pins';
+          const isAssumed = kind === 'inout' || isRead;
+          const ofPorts = isAssumed ? ['supply-assumed', 'supply-assumed'] : [];
           const ofPins = library.endsWith('without power pins') ? ['supply-absent'] : [];
           expect([...codes].sort()).toEqual([...ofPins, ...ofPorts]);
           expect([circuit.registers.count, circuit.latches.count]).toEqual([2, 1]);
@@ -81,6 +84,18 @@ describe('a port of the top', () => {
       'supply-assumed: inout VDDA of the top module is no input but a supply',
       'supply-assumed: inout VSS of the top module is no input but a supply',
       'inout-as-output: inout VCC of the top module is driven inside',
+    ]);
+  });
+
+  it('need not be there for a net without driver to be a supply', () => {
+    const text = `module t (input a, output y, z); wire VDD, GND, VSS; reg VCC; assign VSS = a;
+      and (y, VDD, !GND, !VSS); assign z = VCC; endmodule`;
+    const [inputs, outputs, messages] = portsOf(text);
+    expect([inputs, outputs]).toEqual([['a'], ['y', 'z']]);
+    expect(messages.sort()).toEqual([
+      'net-undriven: VCC is read but never assigned',
+      'supply-assumed: GND has no driver and is taken for a supply, held at 0, as its name says; drive it where it is none',
+      'supply-assumed: VDD has no driver and is taken for a supply, held at 1, as its name says; drive it where it is none',
     ]);
   });
 

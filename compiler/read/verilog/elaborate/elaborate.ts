@@ -7,6 +7,7 @@ import type { Source } from '../../../diagnostics/source.js';
 import type { Position, SourceMap } from '../../../diagnostics/sourceMap.js';
 import { type Allowance, BudgetExceeded } from '../budget.js';
 import type { ModuleSyntax, VerilogSyntax } from '../syntax.js';
+import { assumedSupplies } from './assumedSupplies.js';
 import { addBoxPorts } from './boxPorts.js';
 import { compileBox } from './compileBox.js';
 import { compileModule } from './compileModule.js';
@@ -21,7 +22,7 @@ import { withReplacements } from './replacements.js';
 import { Stamper } from './stamp.js';
 import type { Template } from './template.js';
 import { chooseTop } from './top.js';
-import { addTopPorts, assumedSupplies, checkTopPorts } from './topPorts.js';
+import { addTopPorts, checkTopPorts } from './topPorts.js';
 import { withoutCopies } from './withoutCopies.js';
 
 /** What `elaborate` may be told. */
@@ -134,6 +135,8 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
   design.absentSupplies.report(design.diagnostics);
   if (index === NO_TEMPLATE) return undefined;
   const top = design.templates[index]!;
+  const supplies = assumedSupplies(design, top);
+  for (const net of supplies.keys()) design.driven.add(top, net);
   design.finish();
   checkBlackBoxes(design, module);
   checkTopPorts(design, module, top);
@@ -151,7 +154,7 @@ function build(design: Design, wanted: string | undefined): Circuit | undefined 
   reserveNames(builder, design, top);
   for (const source of design.sources.sources) builder.addSource(source);
   const stamper = new Stamper(builder, design.templates);
-  const boundary = stamper.stamp(top, assumedSupplies(design, module, top));
+  const boundary = stamper.stamp(top, supplies);
   addTopPorts(builder, design, module, top, boundary, (net) => stamper.constants.of(net));
   addBoxPorts(builder, design, stamper.boxes);
   reportLateDrivers(design, builder);

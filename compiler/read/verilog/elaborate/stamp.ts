@@ -81,14 +81,13 @@ export class Stamper {
   }
 
   /**
-   * Stamps the top, with constants at some places of its boundary; returns the circuit's nets of
-   * that.
+   * Stamps the top, with constants on some of its nets; returns the circuit's nets of its boundary.
    */
-  stamp(top: Template, held: ReadonlyMap<number, 0 | 1>): Uint32Array {
+  stamp(top: Template, held: ReadonlyMap<NetId, 0 | 1>): Uint32Array {
     const frame = this.#enter(0, this.#templates.indexOf(top), undefined);
     this.#fill(frame, 0);
-    for (const [place, level] of held) {
-      const net = netId(frame.nets[top.boundary[place]!]!);
+    for (const [own, level] of held) {
+      const net = netId(frame.nets[own]!);
       this.#builder.drive(net, level === 1 ? GateKind.One : GateKind.Zero, []);
       this.constants.add(net, level);
     }

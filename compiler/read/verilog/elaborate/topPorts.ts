@@ -1,6 +1,5 @@
 import type { CircuitBuilder } from '../../../circuit/builder.js';
 import { type NetId, netId } from '../../../circuit/ids.js';
-import { supplyLevel } from '../../../circuit/supplyNames.js';
 import type { Span } from '../../../diagnostics/source.js';
 import type { ModuleSyntax } from '../syntax.js';
 import type { Design } from './design.js';
@@ -21,30 +20,6 @@ export function checkTopPorts(design: Design, module: ModuleSyntax, top: Templat
     }
   }
   for (const { first, second } of top.repeats) checkRepeat(design, module, top, first, second);
-}
-
-/**
- * The inouts of the top module that nothing inside drives and whose names are those of supplies: by
- * their place in the boundary, the level that they are held at.
- */
-export function assumedSupplies(
-  design: Design,
-  module: ModuleSyntax,
-  top: Template,
-): Map<number, 0 | 1> {
-  const supplies = new Map<number, 0 | 1>();
-  for (const [index, port] of top.ports.entries()) {
-    if (port.direction !== Flag.Inout || port.width !== 1 || isDrivenInside(top, port)) continue;
-    const name = design.text(port.name);
-    const level = supplyLevel(name);
-    if (level === undefined) continue;
-    supplies.set(port.offset, level);
-    const message =
-      `inout ${name} of the top module is no input but a supply, held at ${level}, ` +
-      'as its name says; declare it as an input where it is one';
-    design.diagnostics.add('supply-assumed', message, placeOf(design, module, top, index));
-  }
-  return supplies;
 }
 
 /**
