@@ -10,8 +10,9 @@ import { Drive, type Template } from './template.js';
  */
 export function assumedSupplies(design: Design, top: Template): Map<NetId, 0 | 1> {
   const supplies = new Map<NetId, 0 | 1>();
-  const { scope, canonical } = top;
-  if (scope === undefined) return supplies;
+  const { scope, canonical, ports } = top;
+  const hasInout = ports.some(({ direction }) => direction === Flag.Inout);
+  if (scope === undefined || (!hasInout && top.mayHaveOpen === undefined)) return supplies;
   const directions = directionsOf(top);
   const { symbols } = scope;
   for (let place = 0; place < symbols.count; place++) {

@@ -45,6 +45,8 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
   const farInitials = [...body.initialValues].filter(([net]) => !builder.isDriven(net));
   const valueNames = valueNamesOf(body);
   const constants = constantNetsOf(builder, usage, nets, find, defaults);
+  for (const net of boundary.nets) usage.markPort(net);
+  const mayHaveOpen = mayBeUndriven(body, usage);
   const template: Template = {
     name: body.text(module.name),
     isCell: module.isCell || isSmallCell(body, boundary),
@@ -61,6 +63,7 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
     blocks: blockNamesOf(body, find),
     scope: body.root,
     netTypes: netTypesOf(classes, find),
+    ...(mayHaveOpen && { mayHaveOpen: true as const }),
     ...(constants.size > 0 && { constants }),
     ...(valueNames.length > 0 && { valueNames }),
     ...(defaults.size > 0 && { defaults }),
@@ -69,8 +72,7 @@ export function complete(body: ModuleBody, boundary: Boundary): Template {
   };
   const { driven } = design;
   markDriven(body, usage);
-  for (const net of boundary.nets) usage.markPort(net);
-  if (mayBeUndriven(body, usage)) {
+  if (mayHaveOpen) {
     design.atEnd(() => reportUndriven(body, usage, (net) => driven.has(template, net)));
   }
   return template;

@@ -97,6 +97,8 @@ export interface Template {
   readonly scope: BlockScope | undefined;
   /** The nets whose type says more than `wire`; absent where there is none. */
   readonly netTypes?: readonly (readonly [net: number, type: NetType])[];
+  /** Absent where all nets that are read have drivers or are those of ports. */
+  readonly mayHaveOpen?: true;
   /** Nets that only a constant drives, see `constantNetsOf`; absent where there is none. */
   readonly constants?: ReadonlyMap<number, 0 | 1>;
   /** Names of values of signals; absent where there is none. */
