@@ -44,6 +44,16 @@ export class GrowableUint32 {
     if (capacity > length) this.#resize(Math.max(capacity, Math.ceil(1.25 * length)));
   }
 
+  /** Appends two entries. */
+  pushTwo(first: number, second: number): void {
+    const at = this.#length;
+    if (at + 2 > this.#data.length) this.#grow(at + 2);
+    const data = this.#data;
+    data[at] = first;
+    data[at + 1] = second;
+    this.#length = at + 2;
+  }
+
   /** Appends three entries. */
   pushThree(first: number, second: number, third: number): void {
     const at = this.#length;

@@ -76,6 +76,15 @@ export class NameTexts {
     return true;
   }
 
+  /** The offset behind a name that stands in `bytes` at an offset; -1 if another text is there. */
+  endOfText(id: NameId, bytes: Uint8Array, start: number): number {
+    const own = this.#bytes;
+    const end = this.#starts[id + 1]!;
+    let at = start;
+    for (let i = this.#starts[id]!; i < end; i++) if (own[i] !== bytes[at++]) return -1;
+    return at;
+  }
+
   /** The name behind an id. */
   text(id: NameId): string {
     const start = this.#starts[id]!;

@@ -55,7 +55,7 @@ export function readCommonInstances(p: Parser): number {
     if (!isNameStart(text, first) || (name === 0 && tokens.nameAt(first) === 0)) break;
     p.beginItem(kind === IDENTIFIER ? word : 0);
     instances.begin(kind === IDENTIFIER ? word : FIRST_GATE - 1 - kind, name, base + item);
-    const end = connectionsFrom(tokens, instances, first);
+    const end = connectionsFrom(p, first);
     if (text[end] !== RightParen) {
       tokens.goOn(end < 0 ? open + 1 : end + 1);
       return end < 0 ? Common.Connections : Common.Connection;

@@ -49,15 +49,20 @@ export const ConnectionKind = {
 const LARGE = 1 << 16;
 const MOST_SCALE = 64;
 
-// A connection is three numbers: the port, what it is connected to, and where. What it is connected
-// to has its kind in the upper two bits, and a `Bit` its name and index in a list of their own.
-const CONNECTION = 3;
-const Field = { Port: 0, Target: 1, Position: 2 } as const;
+// A connection is two numbers: what is connected, and where. What is connected has its kind in the
+// upper two bits, and a `Bit` its name and index in a list of their own.
+const CONNECTION = 2;
+const Field = { Target: 0, Position: 1 } as const;
 const KIND = 30;
 const MOST = (1 << KIND) - 1;
 
-// The record of an instance; `Start` is its first connection.
-const InstanceField = { Module: 0, Name: 1, Position: 2, Start: 3, Size: 4 } as const;
+// The record of an instance; `Start` is its first connection, `Ports` where its ports are listed.
+const InstanceField = { Module: 0, Name: 1, Position: 2, Start: 3, Ports: 4, Size: 5 } as const;
+
+// From so many instances on a table keeps in mind for so many modules which ports their last
+// instances have listed.
+const LONG = 16;
+const REMEMBERED = 256;
 
 /** Value of `connectionPort` for a positional connection. */
 export const POSITIONAL = 0xffffffff;
@@ -72,14 +77,24 @@ export interface InstanceExtras {
 }
 
 /**
- * All instances of a module in columns, sixteen bytes for each and twelve for each connection.
+ * All instances of a module in columns, twenty bytes for each and eight for each connection.
  *
- * The connections of instance i are `connectionStart(i) … connectionStart(i + 1) - 1`.
+ * The connections of instance i are `connectionStart(i) … connectionStart(i + 1) - 1`. Instances of
+ * a cell that connect the same ports in the same order share a list of them.
  */
 export class InstanceTable {
   readonly #instances = new GrowableUint32(8 * InstanceField.Size);
   readonly #connection = new GrowableUint32();
   readonly #bits = new GrowableUint32(16);
+  /** Lists of ports, one behind another; nothing in it ever changes. */
+  readonly #ports = new GrowableUint32(16);
+  /** Where the ports of the instance begun last are listed, and its first connection. */
+  #list = 0;
+  #start = 0;
+  /** Pairs of a module and where the ports of its last instance are listed; of a long table only. */
+  #lists: Int32Array | undefined;
+  #count = 0;
+  #connectionCount = 0;
   #extras: Map<number, InstanceExtras> | undefined;
   readonly expressions: Expression[] = [];
   readonly #fractionRead: () => number;
@@ -93,7 +108,7 @@ export class InstanceTable {
   }
 
   get count(): number {
-    return this.#instances.length / InstanceField.Size;
+    return this.#count;
   }
 
   /**
@@ -101,26 +116,73 @@ export class InstanceTable {
    * primitive, or `-1 - g` for `builtinGates[g]`. `name` is 0 where the instance has none.
    */
   begin(module: number, name: NameId, position: Position, extras?: InstanceExtras): number {
-    const { count } = this;
-    if (count === 0) this.#fractionBefore = this.#fractionRead();
+    if (this.#count === 0) this.#fractionBefore = this.#fractionRead();
     if (this.#connectionCount >= this.#reserved) this.#reserve();
     if (extras !== undefined) {
       this.#extras ??= new Map();
-      this.#extras.set(count, extras);
+      this.#extras.set(this.#count, extras);
     }
-    this.#instances.pushFour(module >>> 0, name, position, this.#connectionCount);
-    return count;
+    this.#start = this.#connectionCount;
+    this.#findList(module);
+    this.#instances.pushFour(module >>> 0, name, position, this.#start);
+    this.#instances.push(this.#list);
+    return this.#count++;
+  }
+
+  /** Chooses the list of ports for an instance of a module. */
+  #findList(module: number): void {
+    if (this.#count === LONG) this.#lists = new Int32Array(2 * REMEMBERED);
+    const lists = this.#lists;
+    const at = (module & (REMEMBERED - 1)) << 1;
+    if (lists !== undefined && lists[at] === module) this.#list = lists[at + 1]!;
+    else {
+      this.#list = this.#ports.length;
+      this.#remember(module);
+    }
+  }
+
+  /**
+   * The port of the next connection of the instance begun last, if it is like others of its module:
+   * what `connect` takes, or `POSITIONAL` where nothing is expected.
+   */
+  get expectedPort(): number {
+    const at = this.#list + this.#connectionCount - this.#start;
+    return at < this.#ports.length ? this.#ports.get(at) : POSITIONAL;
   }
 
   /** Adds a connection to the instance begun last. `port` is a NameId or `POSITIONAL`. */
   connect(port: number, kind: number, first: number, second: number, position: Position): void {
+    const place = this.#list + this.#connectionCount - this.#start;
+    if (place === this.#ports.length) this.#ports.push(port);
+    else if (this.#ports.get(place) !== port) this.#listAnew(port);
     let target = first;
     if (kind === ConnectionKind.Bit) {
       target = this.#bits.length;
       this.#bits.push(first);
       this.#bits.push(second);
     }
-    this.#connection.pushThree(port, target | (kind << KIND), position);
+    this.#connection.pushTwo(target | (kind << KIND), position);
+    this.#connectionCount++;
+  }
+
+  /** Lets the instance begun last have a list of its own, whose next entry is a port. */
+  #listAnew(port: number): void {
+    const ports = this.#ports;
+    const old = this.#list;
+    this.#list = ports.length;
+    const end = old + this.#connectionCount - this.#start;
+    for (let at = old; at < end; at++) ports.push(ports.get(at));
+    ports.push(port);
+    const last = this.#count - 1;
+    this.#instances.set(last * InstanceField.Size + InstanceField.Ports, this.#list);
+    this.#remember(this.module(last));
+  }
+
+  #remember(module: number): void {
+    if (this.#lists === undefined) return;
+    const at = (module & (REMEMBERED - 1)) << 1;
+    this.#lists[at] = module;
+    this.#lists[at + 1] = this.#list;
   }
 
   /** Lets other lists use the memory of this table, which becomes empty. */
@@ -128,6 +190,9 @@ export class InstanceTable {
     this.#instances.release();
     this.#connection.release();
     this.#bits.release();
+    this.#ports.release();
+    this.#count = 0;
+    this.#connectionCount = 0;
   }
 
   // With what has been read as a measure of what comes, a large table need not grow step by step.
@@ -167,9 +232,10 @@ export class InstanceTable {
       : this.#connectionCount;
   }
 
-  /** NameId of the port, or `POSITIONAL`. */
-  connectionPort(connection: number): number {
-    return this.#connection.get(connection * CONNECTION + Field.Port);
+  /** NameId of the port of a connection that an instance has, or `POSITIONAL`. */
+  connectionPort(instance: number, connection: number): number {
+    const place = connection - this.#field(instance, InstanceField.Start);
+    return this.#ports.get(this.#field(instance, InstanceField.Ports) + place);
   }
 
   /** A `ConnectionKind`. */
@@ -194,10 +260,6 @@ export class InstanceTable {
 
   #field(instance: number, field: number): number {
     return this.#instances.get(instance * InstanceField.Size + field);
-  }
-
-  get #connectionCount(): number {
-    return this.#connection.length / CONNECTION;
   }
 
   #target(connection: number): number {

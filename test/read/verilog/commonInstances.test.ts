@@ -18,7 +18,23 @@ const net = fc.constantFrom(
 );
 const named = fc
   .tuple(
-    fc.constantFrom('.p', '.q1', '.\\r[1] ', '.', '.input', '. p', '.p ', '.3', '.\n p\n'),
+    fc.constantFrom(
+      ...[
+        '.p',
+        '.q1',
+        '.\\r[1] ',
+        '.',
+        '.input',
+        '. p',
+        '.p ',
+        '.3',
+        '.\n p\n',
+        '.p1',
+        '.p$',
+        '.q',
+      ],
+      ...['.r[1]', '.\\p ', '.\\input ', '.P'],
+    ),
     fc.constantFrom('(', ' (', '((', ''),
     net,
     fc.constantFrom(')', ' )', '\n)', '', '))'),
@@ -91,8 +107,14 @@ const wireEnd = fc.constantFrom('@;', ';', ',;', '', ';@wire z;');
 
 const inGaps = (text: string, gap: string): string => text.replaceAll('@', gap);
 
+// From some instances on the table expects the ports that the last instance of a cell has connected.
+const before = [
+  ...Array.from({ length: 16 }, () => '  inv first (.p(a), .q1(v[3]), .\\r[1] (c));'),
+  '  nand (a, b); M other (.\\input (a), .q1(b));',
+];
+
 const wrapped = (lines: readonly string[]): string =>
-  `\`define M a\nmodule m;\n${lines.join('\n')}\nendmodule\n`;
+  `\`define M a\nmodule m;\n${[...before, ...lines].join('\n')}\nendmodule\n`;
 
 type Statement = readonly [string, readonly string[], string];
 

@@ -229,7 +229,7 @@ function showInstance(instance: number, module: ModuleSyntax, names: NameTable):
   const connections: string[] = [];
   const end = table.connectionStart(instance + 1);
   for (let c = table.connectionStart(instance); c < end; c++) {
-    const port = table.connectionPort(c);
+    const port = table.connectionPort(instance, c);
     const text = showConnection(c, module, names);
     connections.push(port === POSITIONAL ? text : `.${names.text(port)}(${text})`);
   }

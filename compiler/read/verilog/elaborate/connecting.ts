@@ -89,7 +89,7 @@ function portPlace(
   position: number,
 ): number {
   const table = body.module.instances;
-  const name = table.connectionPort(connection);
+  const name = table.connectionPort(instance, connection);
   const { ports, portOfName } = template;
   if (name === POSITIONAL && !template.hasPortOrder) {
     if (position === 0) reportUnordered(body, template, table.connectionPosition(connection));
@@ -142,7 +142,7 @@ function reportTwice(
   place: number,
 ): void {
   const table = body.module.instances;
-  const own = table.connectionPort(connection);
+  const own = table.connectionPort(instance, connection);
   const at = table.connectionPosition(connection);
   const { start, end } = own === POSITIONAL ? body.wordAt(at) : wordBefore(body, own, at);
   const port = body.text(template.ports[place]!.name);

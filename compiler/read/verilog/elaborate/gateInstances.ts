@@ -40,7 +40,7 @@ function checkTerminals(body: ModuleBody, { word, row, instance }: Gate): boolea
   const got = table.connectionStart(instance + 1) - first;
   const { least, most, text } = terminalsOf[row.form];
   const isCountRight = got >= least && got <= most;
-  if (isCountRight && table.connectionPort(first) === POSITIONAL) return true;
+  if (isCountRight && table.connectionPort(instance, first) === POSITIONAL) return true;
   const { start, end } = body.wordAt(table.position(instance));
   if (!isCountRight) {
     const count = got === 1 ? '1 connection' : `${got} connections`;

@@ -35,7 +35,7 @@ export function connectUnknownBox(body: ModuleBody, scope: BlockScope, instance:
   const end = table.connectionStart(instance + 1);
   for (let connection = table.connectionStart(instance); connection < end; connection++) {
     if (table.connectionKind(connection) === ConnectionKind.Empty) continue;
-    const pin = pinOf(body, scope, connection);
+    const pin = pinOf(body, scope, instance, connection);
     if (pins.every((each) => each.name !== pin.name)) pins.push(pin);
     else reportTwice(body, instance, connection);
   }
@@ -56,15 +56,15 @@ function problemOf({ module }: ModuleBody, instance: number): string | undefined
   }
   const end = table.connectionStart(instance + 1);
   for (let connection = table.connectionStart(instance); connection < end; connection++) {
-    if (table.connectionPort(connection) !== POSITIONAL) continue;
+    if (table.connectionPort(instance, connection) !== POSITIONAL) continue;
     return `has connections by position, which do not tell its ports; ${DECLARE}`;
   }
   return undefined;
 }
 
-function pinOf(body: ModuleBody, scope: BlockScope, connection: number): Pin {
+function pinOf(body: ModuleBody, scope: BlockScope, instance: number, connection: number): Pin {
   const table = body.module.instances;
-  const name: NameId = table.connectionPort(connection);
+  const name: NameId = table.connectionPort(instance, connection);
   const expression = connectionExpression(body, table, connection)!;
   const nets = readNets(body, scope, expression);
   const width = nets.length;
@@ -100,7 +100,7 @@ function canBeDriven(
 function reportTwice(body: ModuleBody, instance: number, connection: number): void {
   const table = body.module.instances;
   const { start, end } = body.wordAt(table.connectionPosition(connection));
-  const port = body.text(table.connectionPort(connection));
+  const port = body.text(table.connectionPort(instance, connection));
   const own = body.text(table.name(instance));
   const message = `port ${port} of ${own} is connected twice; remove one of the two`;
   body.report('name-redeclared', message, start, end);

@@ -49,7 +49,7 @@ export class UnknownModules {
     const start = table.connectionStart(instance);
     const end = table.connectionStart(instance + 1);
     for (let connection = start; connection < end; connection++) {
-      const port = table.connectionPort(connection);
+      const port = table.connectionPort(instance, connection);
       if (port !== POSITIONAL) unknown.pins.add(port);
       else unknown.positional = Math.max(unknown.positional, connection - start + 1);
     }
