@@ -23,8 +23,13 @@ export class SourceMap {
     return base;
   }
 
-  /** Index into `sources` and byte offset of a position. */
-  locate(position: Position): { index: number; offset: number } {
+  /** Position of the first byte of `sources[index]`. */
+  base(index: number): Position {
+    return this.#bases[index]!;
+  }
+
+  /** Index into `sources` of a position. */
+  indexOf(position: Position): number {
     let low = 0;
     let high = this.#bases.length - 1;
     while (low < high) {
@@ -32,7 +37,13 @@ export class SourceMap {
       if (this.#bases[middle]! <= position) low = middle;
       else high = middle - 1;
     }
-    return { index: low, offset: position - this.#bases[low]! };
+    return low;
+  }
+
+  /** Index into `sources` and byte offset of a position. */
+  locate(position: Position): { index: number; offset: number } {
+    const index = this.indexOf(position);
+    return { index, offset: position - this.base(index) };
   }
 
   /** The span between two positions; where `end` is in another source, only its start is kept. */

@@ -264,8 +264,8 @@ export class ModuleBody implements OuterHost {
 
   /** Lets what is recorded next have its origin at a position. */
   buildAt(position: Position): void {
-    const { index, offset } = this.sources.locate(position);
-    this.builder.at(index, offset);
+    const index = this.sources.indexOf(position);
+    this.builder.at(index, position - this.sources.base(index));
   }
 
   report(

@@ -59,14 +59,21 @@ export class Children {
   }
 
   /**
-   * Adds an instance of a template with nothing connected to its boundary of `width` nets. `name`
-   * is 0 where it shall make no scope.
+   * Adds an instance of a template with nothing connected to its boundary of `width` nets, which
+   * stands at an offset of a source. `name` is 0 where it shall make no scope.
    */
-  add(template: number, name: NameId, block: number, origin: Origin, width: number): number {
-    if (this.#budget?.grow(Field.Size + width) === false) throw tooLarge(origin);
+  add(
+    template: number,
+    name: NameId,
+    block: number,
+    source: number,
+    offset: number,
+    width: number,
+  ): number {
+    if (this.#budget?.grow(Field.Size + width) === false) throw tooLarge({ source, offset });
     const records = this.#records;
     records.pushThree(template, name, block);
-    records.pushThree(origin.source, origin.offset, this.#ports.length);
+    records.pushThree(source, offset, this.#ports.length);
     this.#ports.extend(width, NO_NET);
     return this.#count++;
   }
@@ -85,7 +92,15 @@ export class Children {
   }
 
   origin(child: number): Origin {
-    return { source: this.#field(child, Field.Source), offset: this.#field(child, Field.Offset) };
+    return { source: this.source(child), offset: this.offset(child) };
+  }
+
+  source(child: number): number {
+    return this.#field(child, Field.Source);
+  }
+
+  offset(child: number): number {
+    return this.#field(child, Field.Offset);
   }
 
   /** The parent's net at a place of the template's boundary. */

@@ -162,8 +162,9 @@ function addPlainChild(
   position: Position,
 ): number {
   const { boundary } = design.templates[template]!;
-  const { index: source, offset } = sources.locate(position);
-  return children.add(template, name, scope.index, { source, offset }, boundary.length);
+  const source = sources.indexOf(position);
+  const offset = position - sources.base(source);
+  return children.add(template, name, scope.index, source, offset, boundary.length);
 }
 
 function addChild(body: ModuleBody, { template, name, scope, position }: Placed): number {

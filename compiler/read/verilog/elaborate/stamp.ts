@@ -37,8 +37,10 @@ interface Frame {
   /** The circuit's memory for each one of the template. */
   memories: readonly PlacedMemory[];
   nextChild: number;
-  /** Where the circuit's logic is said to come from, instead of the text of a library cell. */
-  origin: Origin | undefined;
+  /** Whether the circuit's logic is said to come from a certain place instead of the cell's text. */
+  hasOrigin: boolean;
+  source: number;
+  offset: number;
 }
 
 const noMemories: readonly PlacedMemory[] = [];
@@ -57,6 +59,8 @@ export class Stamper {
   readonly #templates: readonly Template[];
   // One frame per level of hierarchy, kept for the next instance on that level.
   readonly #frames: Frame[] = [];
+  // Pairs of a net and what drives it, of a template with tables, of which such have few.
+  readonly #driven: number[] = [];
   // Lists of each length that gates are handed over in, so that none is made per gate.
   readonly #lists: NetId[][] = [];
   /** Index of the names of each template's first block in the circuit. */
@@ -84,7 +88,7 @@ export class Stamper {
    * Stamps the top, with constants on some of its nets; returns the circuit's nets of its boundary.
    */
   stamp(top: Template, held: ReadonlyMap<NetId, 0 | 1>): Uint32Array {
-    const frame = this.#enter(0, this.#templates.indexOf(top), undefined);
+    const frame = this.#enter(0, this.#templates.indexOf(top));
     this.#fill(frame, 0);
     for (const [own, level] of held) {
       const net = netId(frame.nets[own]!);
@@ -112,8 +116,11 @@ export class Stamper {
     const number = this.#templateOf(parent, child);
     const template = this.#templates[number]!;
     template.whenUsed?.();
-    const takesOver = parent.origin === undefined && template.isCell;
-    const frame = this.#enter(depth, number, takesOver ? children.origin(child) : parent.origin);
+    const takesOver = !parent.hasOrigin && template.isCell;
+    const frame = this.#enter(depth, number);
+    frame.hasOrigin = parent.hasOrigin || takesOver;
+    frame.source = takesOver ? children.source(child) : parent.source;
+    frame.offset = takesOver ? children.offset(child) : parent.offset;
     const { nets } = frame;
     const { boundary } = template;
     for (let place = 0; place < boundary.length; place++) {
@@ -155,6 +162,7 @@ export class Stamper {
   }
 
   #addBox(parent: Frame, child: number, { template, nets, scopes }: Frame): void {
+    const { source, offset } = parent;
     const { children } = parent.template;
     const isOpen = (place: number): boolean => children.port(child, place) === NO_NET;
     this.boxes.push({
@@ -163,11 +171,11 @@ export class Stamper {
       nets: Array.from(template.boundary, (net, place) =>
         isOpen(place) ? NO_NET : netId(nets[net]!),
       ),
-      origin: parent.origin ?? children.origin(child),
+      origin: parent.hasOrigin ? { source, offset } : children.origin(child),
     });
   }
 
-  #enter(depth: number, number: number, origin: Origin | undefined): Frame {
+  #enter(depth: number, number: number): Frame {
     const template = this.#templates[number]!;
     const count = template.recording.netCount;
     let frame = this.#frames[depth];
@@ -179,7 +187,9 @@ export class Stamper {
         scopes: [],
         memories: [],
         nextChild: 0,
-        origin,
+        hasOrigin: false,
+        source: 0,
+        offset: 0,
       };
       this.#frames[depth] = frame;
     }
@@ -191,21 +201,19 @@ export class Stamper {
     frame.number = number;
     frame.memories = noMemories;
     frame.nextChild = 0;
-    frame.origin = origin;
+    frame.hasOrigin = false;
     return frame;
   }
 
   /** Makes the nets that are not connected yet, and all drivers. */
   #fill(frame: Frame, depth: number): void {
-    const { template, origin } = frame;
-    const { tables } = template.recording;
-    if (origin !== undefined) this.#builder.at(origin.source, origin.offset);
+    const { template } = frame;
+    if (frame.hasOrigin) this.#builder.at(frame.source, frame.offset);
     this.#makeNets(frame);
-    // What drives each net, for tables: another driver of a bus may have come first.
-    const driven = tables.length > 0 ? new Map<number, NetId>() : undefined;
-    this.#makeDrivers(frame, driven);
+    const hasTables = template.recording.tables.length > 0;
+    this.#makeDrivers(frame, hasTables);
     // A loop over nothing takes longer than to see that there is nothing.
-    if (driven !== undefined) this.#addTables(frame, driven);
+    if (hasTables) this.#addTables(frame);
     if (template.constants !== undefined) this.#noteConstants(frame);
     if (template.farInitials !== undefined) this.#noteFarInitials(frame, depth);
     if (template.valueNames !== undefined) this.#nameValues(frame);
@@ -216,10 +224,13 @@ export class Stamper {
     for (const [net, level] of template.constants!) this.constants.add(nets[net]!, level);
   }
 
-  #addTables({ template, nets }: Frame, driven: ReadonlyMap<number, NetId>): void {
+  #addTables({ template, nets }: Frame): void {
+    const driven = this.#driven;
     for (const { output, inputs, table } of template.recording.tables) {
-      const own = inputs.map((net) => netId(nets[net]!));
-      this.#builder.table(driven.get(nets[output]!)!, own, table);
+      let at = driven.length - 2;
+      // Another driver of a bus may have come first.
+      while (driven[at] !== nets[output]) at -= 2;
+      this.#builder.table(netId(driven[at + 1]!), translated(inputs, nets), table);
     }
   }
 
@@ -244,7 +255,7 @@ export class Stamper {
     }
   }
 
-  #makeNets({ template, nets, origin }: Frame): void {
+  #makeNets({ template, nets, hasOrigin }: Frame): void {
     const { recording, canonical, unused } = template;
     const builder = this.#builder;
     const count = recording.netCount;
@@ -253,21 +264,24 @@ export class Stamper {
       if (older !== net) {
         nets[net] = nets[older]!;
       } else if (nets[net] === NO_NET && unused?.[net] !== 1) {
-        if (origin === undefined) builder.at(recording.netSource(net), recording.netOffset(net));
+        if (!hasOrigin) builder.at(recording.netSource(net), recording.netOffset(net));
         nets[net] = builder.net();
       }
     }
   }
 
-  #makeDrivers({ template, nets, origin }: Frame, driven: Map<number, NetId> | undefined): void {
+  #makeDrivers({ template, nets, hasOrigin }: Frame, hasTables: boolean): void {
     const { recording } = template;
+    if (hasTables) this.#driven.length = 0;
     const count = recording.driverCount;
     for (let driver = 0; driver < count; driver++) {
-      if (origin === undefined) {
+      if (!hasOrigin) {
         this.#builder.at(recording.driverSource(driver), recording.driverOffset(driver));
       }
       const net = this.#drive(template, nets, driver);
-      if (net !== NO_NET) driven?.set(nets[recording.driverOutput(driver)]!, net);
+      if (hasTables && net !== NO_NET) {
+        this.#driven.push(nets[recording.driverOutput(driver)]!, net);
+      }
     }
   }
 
@@ -350,3 +364,6 @@ export class Stamper {
     return first;
   }
 }
+
+const translated = (list: readonly NetId[], nets: Uint32Array): NetId[] =>
+  list.map((net) => netId(nets[net]!));

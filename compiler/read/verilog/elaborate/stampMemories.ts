@@ -1,7 +1,7 @@
 import type { CircuitBuilder } from '../../../circuit/builder.js';
 import { type NetId, NO_NET, netId } from '../../../circuit/ids.js';
 import { FarContents, type InitialContents } from '../initialContents.js';
-import { DROPPED, type Origin, type RecordedMemory } from './recording.js';
+import { DROPPED, type RecordedMemory } from './recording.js';
 import type { Template } from './template.js';
 
 /** A memory of one instance, which other instances may name too. */
@@ -49,7 +49,9 @@ interface Instance {
   readonly template: Template;
   readonly nets: Uint32Array;
   readonly scopes: readonly number[];
-  readonly origin: Origin | undefined;
+  readonly hasOrigin: boolean;
+  readonly source: number;
+  readonly offset: number;
   memories: readonly PlacedMemory[];
 }
 
@@ -117,13 +119,13 @@ export class MemoryStamper {
   /** Adds the ports that an instance has to a memory, once the number of that is known. */
   #ports(
     { width, ...memory }: RecordedMemory,
-    { template: { recording }, nets, origin: cell }: Instance,
+    { template: { recording }, nets, hasOrigin, source, offset }: Instance,
   ): (number: number) => void {
     const builder = this.#builder;
     // The nets of a frame are those of another instance soon.
     const moved = (list: readonly NetId[]): NetId[] => list.map((net) => netId(nets[net]!));
     const reads = memory.reads.map(({ address, firstDriver }) => ({
-      place: cell ?? recording.driverOrigin(firstDriver),
+      place: hasOrigin ? { source, offset } : recording.driverOrigin(firstDriver),
       address: moved(address),
       data: Array.from({ length: width }, (_, bit) => {
         const isRead = recording.driverKind(firstDriver + bit) !== DROPPED;

@@ -43,7 +43,7 @@ export function connectUnknownBox(body: ModuleBody, scope: BlockScope, instance:
   const { index: source, offset } = sources.locate(position);
   const nets = pins.flatMap((pin) => pin.nets);
   const own = table.name(instance);
-  const child = children.add(template, own, scope.index, { source, offset }, nets.length);
+  const child = children.add(template, own, scope.index, source, offset, nets.length);
   for (const [place, net] of nets.entries()) children.setPort(child, place, net);
 }
 
