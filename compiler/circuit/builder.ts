@@ -3,7 +3,7 @@ import { BusParts, joinedType, NetType } from './busParts.js';
 import type { BusCheck, Circuit, Port } from './circuit.js';
 import { Edge, type ValueNames } from './circuit.js';
 import { GateKind, gateInfo } from './gates.js';
-import { GrowableUint8, GrowableUint32 } from './growable.js';
+import { GrowableSmall, GrowableUint8, GrowableUint32 } from './growable.js';
 import {
   type Hierarchy,
   HierarchyBuilder,
@@ -41,9 +41,9 @@ export class CircuitBuilder {
   readonly extraDrivers: ExtraDriver[] = [];
   readonly #kind: GrowableUint8;
   readonly #driverStart: GrowableUint32;
-  readonly #driverCount: GrowableUint32;
+  readonly #driverCount: GrowableSmall;
   readonly #fanin: GrowableUint32;
-  readonly #originSource: GrowableUint32;
+  readonly #originSource: GrowableSmall;
   readonly #originOffset: GrowableUint32;
   readonly #inputs: Port[] = [];
   readonly #outputs: Port[] = [];
@@ -68,9 +68,9 @@ export class CircuitBuilder {
     this.hierarchy = new HierarchyBuilder(names);
     this.#kind = new GrowableUint8(expectedNets);
     this.#driverStart = new GrowableUint32(expectedNets);
-    this.#driverCount = new GrowableUint32(expectedNets);
+    this.#driverCount = new GrowableSmall(expectedNets);
     this.#fanin = new GrowableUint32(2 * expectedNets);
-    this.#originSource = new GrowableUint32(expectedNets);
+    this.#originSource = new GrowableSmall(expectedNets);
     this.#originOffset = new GrowableUint32(expectedNets);
   }
 
@@ -332,7 +332,7 @@ export class CircuitBuilder {
       ...(this.#valueNames.length > 0 && { valueNames: this.#valueNames }),
       checks: this.#namedChecks(hierarchy, netCount),
       sources: this.#sources,
-      originSource: new Uint16Array(this.#originSource.take()),
+      originSource: this.#originSource.toUint16(),
       originOffset: this.#originOffset.take(),
     };
   }

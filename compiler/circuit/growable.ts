@@ -198,6 +198,51 @@ export class GrowableUint8 {
   }
 }
 
+const ESCAPE = 255;
+
+/** A list of numbers of which by far the most are below 255: a byte for each of these. */
+export class GrowableSmall {
+  readonly #bytes: GrowableUint8;
+  #others: Map<number, number> | undefined;
+
+  constructor(capacity?: number) {
+    this.#bytes = new GrowableUint8(capacity);
+  }
+
+  push(value: number): void {
+    if (value < ESCAPE) this.#bytes.push(value);
+    else this.#pushOther(value);
+  }
+
+  get(index: number): number {
+    const byte = this.#bytes.get(index);
+    return byte < ESCAPE ? byte : this.#others!.get(index)!;
+  }
+
+  set(index: number, value: number): void {
+    this.#bytes.set(index, Math.min(value, ESCAPE));
+    if (value >= ESCAPE) this.#setOther(index, value);
+  }
+
+  /** The entries so far, which must be below 2^16. */
+  toUint16(): Uint16Array {
+    const list = new Uint16Array(this.#bytes.take());
+    for (const [index, value] of this.#others ?? [])
+      if (list[index] === ESCAPE) list[index] = value;
+    return list;
+  }
+
+  #pushOther(value: number): void {
+    this.#setOther(this.#bytes.length, value);
+    this.#bytes.push(ESCAPE);
+  }
+
+  #setOther(index: number, value: number): void {
+    this.#others ??= new Map();
+    this.#others.set(index, value);
+  }
+}
+
 // A copy takes time and, until the old list is gone, twice the memory; some unused room is cheaper.
 // That of a short list is part of a page.
 function fitting(data: Uint32Array | Uint8Array, length: number): Uint32Array | Uint8Array {

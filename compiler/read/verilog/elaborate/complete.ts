@@ -105,6 +105,7 @@ function withLateNets(
 
 /** Puts the nets of instances on record that are driven here, which their modules do not know. */
 function markDriven({ children, design }: ModuleBody, usage: Usage): void {
+  if (!children.hasImports) return;
   for (let child = 0; child < children.count; child++) {
     for (const { childNet, net } of children.imports(child)) {
       if (usage.driveOf(net) === Drive.None) continue;

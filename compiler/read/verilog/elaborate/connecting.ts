@@ -59,32 +59,46 @@ function connectInstance(
   }
   const template = body.design.templates[body.children.template(child)]!;
   const count = body.arrayLength(number);
-  const connected: Connected = { scope, instance, child, count, template };
+  const { ports } = template;
   // Places of more than 31 ports are told apart by a set, which few instances need.
-  const seen = template.ports.length > 31 ? new Set<number>() : undefined;
+  const seen = ports.length > 31 ? new Set<number>() : undefined;
   let seenBits = 0;
   let connections = 0;
   for (let connection = first; connection < end; connection++) {
-    const place = portPlace(body, connected, connection, connection - first);
+    // Most netlists name the ports in the order of their declaration.
+    const position = connection - first;
+    const isNext = ports[position]?.name === table.connectionPort(instance, connection);
+    const place = isNext ? position : portPlace(body, template, instance, connection, position);
     if (place < 0) continue;
     const isSeen = seen === undefined ? (seenBits >>> place) & 1 : seen.has(place);
     if (isSeen) {
-      reportTwice(body, connected, connection, place);
+      reportTwice(body, template, instance, connection, place);
       continue;
     }
     seenBits |= 1 << place;
     seen?.add(place);
     if (table.connectionKind(connection) !== ConnectionKind.Empty) connections++;
-    connectPort(body, connected, connection, template.ports[place]!);
+    const port = ports[place]!;
+    if (port.width === 1 && count === 1) {
+      const net = simpleNet(body, scope, table, connection, mayDrive(template, port));
+      if (net !== NOT_SIMPLE) {
+        connectNet(body, child, port.offset, net);
+        continue;
+      }
+    }
+    connectNets(body, { scope, instance, child, count, template }, connection, port);
   }
-  if (connections < template.ports.length) finishUnconnected(body, connected);
-  if (template.repeats.length > 0) joinRepeats(body, connected);
+  if (connections < ports.length) {
+    finishUnconnected(body, { scope, instance, child, count, template });
+  }
+  if (template.repeats.length > 0) joinRepeats(body, child, count, template);
 }
 
 /** Index of the port that a connection names, or -1 after a report. */
 function portPlace(
   body: ModuleBody,
-  { template, instance }: Connected,
+  template: Template,
+  instance: number,
   connection: number,
   position: number,
 ): number {
@@ -105,8 +119,6 @@ function portPlace(
     }
     return -1;
   }
-  // Most netlists name the ports in the order of their declaration.
-  if (ports[position]?.name === name) return position;
   const place = portOfName.get(name);
   if (place !== undefined) return place;
   const text = body.text(name);
@@ -137,7 +149,8 @@ function reportUnordered(body: ModuleBody, { name, ports }: Template, place: Pos
 
 function reportTwice(
   body: ModuleBody,
-  { template, instance }: Connected,
+  template: Template,
+  instance: number,
   connection: number,
   place: number,
 ): void {
@@ -150,7 +163,8 @@ function reportTwice(
   body.report('name-redeclared', message, start, end);
 }
 
-function connectPort(
+/** Connects a port to what is no single net that can be told at once. */
+function connectNets(
   body: ModuleBody,
   connected: Connected,
   connection: number,
@@ -159,13 +173,6 @@ function connectPort(
   const { scope, child, count, template } = connected;
   const table = body.module.instances;
   const drives = mayDrive(template, port);
-  if (port.width === 1 && count === 1) {
-    const net = simpleNet(body, scope, table, connection, drives);
-    if (net !== NOT_SIMPLE) {
-      connectNet(body, child, port.offset, net);
-      return;
-    }
-  }
   const expression = connectionExpression(body, table, connection);
   if (expression === undefined || port.width === 0) return;
   const nets = drives ? drivenNets(body, scope, expression) : readNets(body, scope, expression);
@@ -209,7 +216,7 @@ function connectNet(body: ModuleBody, child: number, place: number, net: NetId):
 }
 
 /** Where one net of the child stands behind several ports, it makes the parent's nets one. */
-function joinRepeats(body: ModuleBody, { child, count, template }: Connected): void {
+function joinRepeats(body: ModuleBody, child: number, count: number, template: Template): void {
   const { children, builder } = body;
   for (const { first, second } of template.repeats) {
     for (let element = child; element < child + count; element++) {

@@ -86,9 +86,9 @@ function reportUnlisted(body: ModuleBody, inHeader: ReadonlySet<NameId>): void {
   const { symbols } = body.root;
   for (let place = 0; place < symbols.count; place++) {
     const symbol = symbols.at(place);
+    if ((symbols.flags(symbol) & Flag.Inout) === 0) continue;
     const name = symbols.name(symbol);
     if (symbols.kind(symbol) !== SymbolKind.Signal || inHeader.has(name)) continue;
-    if ((symbols.flags(symbol) & Flag.Inout) === 0) continue;
     const text = body.text(name);
     const message = `${text} has a direction but is not in the port list of the module; add it there`;
     body.report('port-unknown', message, symbols.start(symbol), symbols.end(symbol));

@@ -61,6 +61,7 @@ export class Stamper {
   readonly #frames: Frame[] = [];
   // Pairs of a net and what drives it, of a template with tables, of which such have few.
   readonly #driven: number[] = [];
+  #drivenCount = 0;
   // Lists of each length that gates are handed over in, so that none is made per gate.
   readonly #lists: NetId[][] = [];
   /** Index of the names of each template's first block in the circuit. */
@@ -227,7 +228,7 @@ export class Stamper {
   #addTables({ template, nets }: Frame): void {
     const driven = this.#driven;
     for (const { output, inputs, table } of template.recording.tables) {
-      let at = driven.length - 2;
+      let at = this.#drivenCount - 2;
       // Another driver of a bus may have come first.
       while (driven[at] !== nets[output]) at -= 2;
       this.#builder.table(netId(driven[at + 1]!), translated(inputs, nets), table);
@@ -272,7 +273,7 @@ export class Stamper {
 
   #makeDrivers({ template, nets, hasOrigin }: Frame, hasTables: boolean): void {
     const { recording } = template;
-    if (hasTables) this.#driven.length = 0;
+    this.#drivenCount = 0;
     const count = recording.driverCount;
     for (let driver = 0; driver < count; driver++) {
       if (!hasOrigin) {
@@ -280,7 +281,8 @@ export class Stamper {
       }
       const net = this.#drive(template, nets, driver);
       if (hasTables && net !== NO_NET) {
-        this.#driven.push(nets[recording.driverOutput(driver)]!, net);
+        this.#driven[this.#drivenCount++] = nets[recording.driverOutput(driver)]!;
+        this.#driven[this.#drivenCount++] = net;
       }
     }
   }
