@@ -54,7 +54,7 @@ export class NameTable {
     this.texts = new NameTexts(FULL * slots);
     this.texts.add(new Uint8Array(0), 0, 0);
     this.#slots = new Int32Array(slots);
-    this.#most = FULL * slots;
+    this.#most = Math.floor(FULL * slots);
   }
 
   get count(): number {
@@ -109,7 +109,7 @@ export class NameTable {
       slots[slot] = id | tagOf(hash, mask);
     }
     this.#slots = slots;
-    this.#most = FULL * slots.length;
+    this.#most = Math.floor(FULL * slots.length);
   }
 }
 

@@ -1,12 +1,23 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { GrowableUint32 } from '../../compiler/circuit/growable.js';
+import { GrowableSmall, GrowableUint32 } from '../../compiler/circuit/growable.js';
+import { dropSpare } from '../../compiler/circuit/shortLists.js';
 
 const LISTS = 6;
 
 const step = fc.record({
   list: fc.nat(LISTS - 1),
-  kind: fc.constantFrom('push', 'extend', 'append', 'cut', 'set', 'reserve', 'clear', 'renew'),
+  kind: fc.constantFrom(
+    'push',
+    'extend',
+    'append',
+    'cut',
+    'set',
+    'reserve',
+    'clear',
+    'renew',
+    'release',
+  ),
   count: fc.oneof(fc.nat(20), fc.nat(1500)),
   value: fc.nat(0xffffffff),
 });
@@ -40,6 +51,9 @@ describe('lists that grow', () => {
           else if (kind === 'clear') {
             list.clear();
             model.length = 0;
+          } else if (kind === 'release') {
+            list.release();
+            model.length = 0;
           } else if (kind === 'renew') {
             expect([...list.take()]).toEqual(model);
             lists[number] = new GrowableUint32(count);
@@ -50,6 +64,7 @@ describe('lists that grow', () => {
             expect(entries).toEqual(models[i]);
           }
         }
+        dropSpare();
       }),
       { seed: 91, numRuns: 60 },
     );
@@ -63,5 +78,24 @@ describe('lists that grow', () => {
     for (const other of others) for (let i = 0; i < 40; i++) other.push(7);
     expect([...taken]).toEqual([1]);
     expect(taken.buffer.byteLength).toBe(4);
+  });
+
+  it('keep small numbers in bytes, and large ones too', () => {
+    const value = fc.oneof(fc.nat(255), fc.constantFrom(254, 255, 256, 65_535));
+    fc.assert(
+      fc.property(fc.array(value), fc.array(fc.tuple(fc.nat(30), value)), (values, changes) => {
+        const list = new GrowableSmall(2);
+        for (const each of values) list.push(each);
+        const model = values.slice();
+        for (const [index, each] of changes) {
+          if (index >= model.length) continue;
+          list.set(index, each);
+          model[index] = each;
+        }
+        expect(model.map((_, index) => list.get(index))).toEqual(model);
+        expect([...list.toUint16()]).toEqual(model);
+      }),
+      { seed: 255 },
+    );
   });
 });

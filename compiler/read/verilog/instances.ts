@@ -64,8 +64,8 @@ const InstanceField = { Module: 0, Name: 1, Position: 2, Start: 3, Ports: 4, Siz
 const LONG = 16;
 const REMEMBERED = 256;
 
-/** Value of `connectionPort` for a positional connection. */
-export const POSITIONAL = 0xffffffff;
+/** Value of `connectionPort` for a positional connection; no port has the empty name. */
+export const POSITIONAL = 0;
 
 /** What only few instances have. */
 export interface InstanceExtras {
@@ -205,7 +205,7 @@ export class InstanceTable {
     this.#connection.reserve(CONNECTION * connections);
     this.#bits.reserve(Math.ceil(this.#bits.length * scale));
     // Before the last of them is there, and with it the need for more.
-    this.#reserved = Math.max(0.9 * connections, 2 * this.#reserved);
+    this.#reserved = Math.max(Math.floor(0.9 * connections), 2 * this.#reserved);
   }
 
   /** NameId of the module or primitive, or `-1 - g` for a built-in gate. */

@@ -40,6 +40,12 @@ class NameCollector {
     const { symbols } = this.#block;
     for (let place = 0; place < symbols.count; place++) {
       const symbol = symbols.at(place);
+      const plain = symbols.plainNet(symbol);
+      if (plain >= 0) {
+        this.nets[this.signals.bits] = this.#find(plain);
+        this.signals.pushScalar(symbols.name(symbol));
+        continue;
+      }
       const kind = symbols.kind(symbol);
       if (kind === SymbolKind.Signal) this.#add(symbol, symbols.value(symbol));
       else if (kind === SymbolKind.Memory) this.#addWords(symbol);
@@ -74,6 +80,10 @@ function bitsOf({ symbols, memories }: BlockScope): number {
   let bits = 0;
   for (let place = 0; place < symbols.count; place++) {
     const symbol = symbols.at(place);
+    if (symbols.plainNet(symbol) >= 0) {
+      bits++;
+      continue;
+    }
     const kind = symbols.kind(symbol);
     if (kind === SymbolKind.Signal) bits += symbols.width(symbol);
     if (kind !== SymbolKind.Memory) continue;

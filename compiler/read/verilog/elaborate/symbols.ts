@@ -164,6 +164,12 @@ export class SymbolTable {
     return records.get(at + Field.Value);
   }
 
+  /** The net of a symbol that `addWire` has made and nothing has changed since, else -1. */
+  plainNet(symbol: number): number {
+    if (symbol < WIRE || symbol >= INSTANCE) return -1;
+    return this.#wires!.isChanged(symbol - WIRE) ? -1 : symbol - WIRE;
+  }
+
   /** The net of a bit of a symbol that is a vector with such a bit; else, as for `scalar`, -1. */
   bitAt(symbol: number, index: number, drives: boolean): number {
     if (this.kind(symbol) !== SymbolKind.Signal) return -1;

@@ -66,6 +66,11 @@ export class WireRuns {
     return (this.#changed.size > 0 && this.#changed.get(net)) || this.#runOf(net).traits;
   }
 
+  /** Whether a wire has got other traits than it was added with. */
+  isChanged(net: number): boolean {
+    return this.#changed.size > 0 && this.#changed.has(net);
+  }
+
   setTraits(net: number, traits: number): void {
     this.#changed.set(net, traits);
   }
