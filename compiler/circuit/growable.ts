@@ -1,4 +1,4 @@
-import { giveBack, numberList, SHORT, spareList } from './shortLists.js';
+import { giveBack, numberList, SHORT, spareList } from './numberLists.js';
 
 const LONG = 4096;
 

@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { GrowableSmall, GrowableUint32 } from '../../compiler/circuit/growable.js';
-import { dropSpare } from '../../compiler/circuit/shortLists.js';
+import { dropSpare } from '../../compiler/circuit/numberLists.js';
 
 const LISTS = 6;
 

@@ -1,7 +1,7 @@
 import { CircuitBuilder } from '../../../circuit/builder.js';
 import { type BusProblem, resolveBuses } from '../../../circuit/busResolution.js';
 import type { Circuit } from '../../../circuit/circuit.js';
-import { dropSpare } from '../../../circuit/shortLists.js';
+import { dropSpare } from '../../../circuit/numberLists.js';
 import type { Diagnostics } from '../../../diagnostics/diagnostics.js';
 import type { Source } from '../../../diagnostics/source.js';
 import type { Position, SourceMap } from '../../../diagnostics/sourceMap.js';

@@ -1,4 +1,4 @@
-import { giveBack, numberList } from '../../../circuit/shortLists.js';
+import { giveBack, numberList } from '../../../circuit/numberLists.js';
 import type { NameId } from '../../names.js';
 
 const EMPTY = 0xffffffff;

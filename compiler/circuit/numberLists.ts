@@ -1,7 +1,7 @@
 /** Length of a page in numbers. */
 const PAGE = 4096;
 
-/** Longer lists have an array buffer of their own. */
+/** Longer lists have an array buffer of their own, or a stretch of what others have spared. */
 export const SHORT = 1024;
 
 // So many lists of each length are kept for others, so that these do not hold on to many pages.
