@@ -1,4 +1,5 @@
 import type { LibertyCell, LibertyStateTable } from './cell.js';
+import { readClockGate } from './clockGate.js';
 import { CellDraft } from './draft.js';
 import { readBundle, readBus, readPins, readSupply } from './readPins.js';
 import { readState } from './readState.js';
@@ -9,7 +10,10 @@ import { wordsOf } from './words.js';
 export function readCell(group: LibertyGroup, library: LibertyGroup): LibertyCell {
   const draft = new CellDraft(group, library);
   for (const inner of group.groups) pinReaders[inner.kind]?.(draft, inner);
-  const states = group.groups.flatMap((inner) => readState(draft, inner));
+  const states = [
+    ...group.groups.flatMap((inner) => readState(draft, inner)),
+    ...readClockGate(draft, group),
+  ];
   const tables = group.groups.filter(({ kind }) => kind === 'statetable');
   const [name] = group.names;
   return {

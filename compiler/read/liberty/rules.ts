@@ -26,7 +26,8 @@ const pinAttributes = [
   'state_function',
   'three_state',
 ];
-const pin = rule(pinAttributes);
+const gateMarks = ['clock', 'enable', 'out', 'test'].map((part) => `clock_gate_${part}_pin`);
+const pin = rule([...pinAttributes, ...gateMarks]);
 const setAndReset = ['clear', 'clear_preset_var1', 'clear_preset_var2', 'preset'];
 const flipFlop = rule(['clocked_on', 'clocked_on_also', 'next_state', ...setAndReset]);
 const latch = rule(['data_in', 'enable', 'enable_also', ...setAndReset]);

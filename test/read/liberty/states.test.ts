@@ -193,6 +193,73 @@ describe('a latch', () => {
   });
 });
 
+describe('a clock gate that the library tells by its kind alone', () => {
+  const pin = (name: string, part: string): string =>
+    `pin (${name}) { direction : ${part === 'out' ? 'output' : 'input'}; clock_gate_${part}_pin : true; }`;
+  const behind = (clock: string): string =>
+    `ff (FQ, FQN) { clocked_on : "${clock}"; next_state : "D"; } ${output('Q', 'FQ')}`;
+  const pins = [pin('CK', 'clock'), pin('E', 'enable'), pin('SE', 'test'), inputs('D')].join(' ');
+
+  it.each([
+    ['latch_posedge', 'latch (IQ, IQN) { enable : "!CK"; data_in : "E + SE"; }', 'CK * IQ'],
+    [
+      'latch_posedge_precontrol',
+      'latch (IQ, IQN) { enable : "!CK"; data_in : "E + SE"; }',
+      'CK * IQ',
+    ],
+    [
+      'latch_posedge_postcontrol',
+      'latch (IQ, IQN) { enable : "!CK"; data_in : "E"; }',
+      'CK * (IQ + SE)',
+    ],
+    [
+      'latch_negedge_precontrol_obs',
+      'latch (IQ, IQN) { enable : "CK"; data_in : "E + SE"; }',
+      "CK + IQ'",
+    ],
+    [
+      'latch_negedge_postcontrol',
+      'latch (IQ, IQN) { enable : "CK"; data_in : "E"; }',
+      "CK + (IQ + SE)'",
+    ],
+    ['none_posedge', '', 'CK * (E + SE)'],
+    ['none_negedge_control', '', "CK + (E + SE)'"],
+  ])('does what %s stands for', (kind, state, passed) => {
+    const register = behind(kind.includes('posedge') ? 'G' : '!G');
+    const told = cellCircuit(
+      `clock_gating_integrated_cell : "${kind}"; ${pins} ${pin('G', 'out')} ${register}`,
+    );
+    const written = cellCircuit(
+      `${inputs('CK', 'E', 'SE', 'D')} ${state} ${output('G', passed)} ${register}`,
+    );
+    fc.assert(
+      fc.property(rowsOf(3), (rows) => {
+        const texts = rows.map((row) => row.join(''));
+        expect(play(referenceFor(told), texts)).toEqual(play(referenceFor(written), texts));
+      }),
+      { seed: 71, numRuns: 40 },
+    );
+  });
+
+  it('is refused where its pins do not say what they are, or the kind is another', () => {
+    const [cure] = cellDesign(
+      `clock_gating_integrated_cell : "generic"; ${pins} ${pin('G', 'out')}`,
+    ).problems;
+    expect(cure).toContain(
+      'is a clock gate of the kind generic, but the library gives no logic for G',
+    );
+    const bare = `clock_gating_integrated_cell : "latch_posedge"; ${inputs('CK', 'E')} ${pin('G', 'out')}`;
+    expect(cellDesign(bare).problems).toHaveLength(1);
+  });
+
+  it('leaves alone what the library writes out', () => {
+    const circuit =
+      cellCircuit(`clock_gating_integrated_cell : "latch_posedge"; ${pins} ${behind('G')}
+      pin (G) { direction : output; function : "CK * E"; clock_gate_out_pin : true; }`);
+    expect(circuit.latches.count).toBe(0);
+  });
+});
+
 describe('a bank', () => {
   const types =
     'type (b) { bit_width : 3; bit_from : 2; bit_to : 0; downto : true; } type (u) { bit_width : 3; }';
