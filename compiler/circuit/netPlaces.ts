@@ -28,7 +28,8 @@ export function placeOfNet(circuit: Circuit, net: number): string {
 
 /**
  * A net with the line of what drives it: `a (top.v:12)`, or where it has no name `nand at top.v:12`,
- * with the instance if one begins there: `nand g1 at …`, `nand in u7 at …` for a cell. `shown` makes what is written of the path of a file.
+ * with the instance if one begins there: `nand g1 at …`, `nand in u7 at …` for a cell. `shown` makes
+ * what is written of the path of a file.
  */
 export function placedNet(
   circuit: Circuit,

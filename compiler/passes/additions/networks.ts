@@ -158,6 +158,7 @@ function networkOf(
   members: readonly number[],
   places: ReadonlyMap<number, Place>,
 ): Network {
+  // The first member stands in column 0; there may be more of them than a call takes arguments.
   const lowest = members.reduce((least, member) => Math.min(least, places.get(member)!.column), 0);
   const inputs: Literal[][] = [];
   const outputs: NetworkOutput[] = [];

@@ -229,8 +229,9 @@ export class Stamper {
     const driven = this.#driven;
     for (const { output, inputs, table } of template.recording.tables) {
       let at = this.#drivenCount - 2;
-      // Another driver of a bus may have come first.
-      while (driven[at] !== nets[output]) at -= 2;
+      // Another driver of a bus may have come first; what was taken out has none, and no table.
+      while (at >= 0 && driven[at] !== nets[output]) at -= 2;
+      if (at < 0) continue;
       this.#builder.table(netId(driven[at + 1]!), translated(inputs, nets), table);
     }
   }
